@@ -1,0 +1,59 @@
+import { createRandom, mixSeed } from '../random';
+import { blink, tracerBrightness } from './blink';
+import { KIND_FREE } from './scene';
+import type { SceneBuilder } from './scene-builder';
+import { smoothPath, smoothPathReach } from './smooth-path';
+import type { FilledTangleOptions } from './tangle-options';
+
+/** Laminar flow between plates: 1.5 times the mean on the axis, 0 at the walls. */
+const AXIS_OVER_MEAN = 1.5;
+
+/**
+ * Free tracers carried by the normal fluid: a parabola across the channel, a slow wobble in all
+ * directions (which takes them out of the sheet and back). They fill a box long enough upstream
+ * that their number in the sheet stays the same.
+ */
+export function addFreeTracers(builder: SceneBuilder, o: FilledTangleOptions, seed: number): void {
+  const { frames, frameIntervalS: dt, pixelSizeM: px } = o;
+  const [fx, fy] = o.flowDirection;
+  const width = o.widthPx * px;
+  const height = o.heightPx * px;
+  const half = o.sheetThicknessM / 2;
+  const durationS = frames * dt;
+  const room = smoothPathReach(o.freeWobbleMPerS, o.freeWobbleTimeS, durationS);
+  const travel = AXIS_OVER_MEAN * o.vnMPerS * durationS;
+  const lowX = -room - Math.max(0, fx * travel);
+  const highX = width + room - Math.min(0, fx * travel);
+  const lowY = -room - Math.max(0, fy * travel);
+  const highY = height + room - Math.min(0, fy * travel);
+  const highZ = half + room;
+  const perVolume = o.freeTracersPerFrame / (width * height * o.sheetThicknessM);
+  const count = createRandom(seed).poisson(perVolume * (highX - lowX) * (highY - lowY) * 2 * highZ);
+
+  const xPx = new Float64Array(frames);
+  const yPx = new Float64Array(frames);
+  const visible = new Uint8Array(frames);
+  for (let i = 0; i < count; i++) {
+    const random = createRandom(mixSeed(seed, i + 1));
+    const x0 = lowX + (highX - lowX) * random.uniform();
+    const y0 = lowY + (highY - lowY) * random.uniform();
+    const z0 = highZ * (2 * random.uniform() - 1);
+    const across = -fy * (x0 - width / 2) + fx * (y0 - height / 2);
+    const u = Math.max(0, AXIS_OVER_MEAN * o.vnMPerS * (1 - ((2 * across) / o.channelWidthM) ** 2));
+    const path = [0, 1, 2].map(() => smoothPath(random, frames, dt, o.freeWobbleMPerS, o.freeWobbleTimeS));
+    for (let k = 0; k < frames; k++) {
+      xPx[k] = (x0 + fx * u * k * dt + path[0][k]) / px - 0.5;
+      yPx[k] = (y0 + fy * u * k * dt + path[1][k]) / px - 0.5;
+      visible[k] = Math.abs(z0 + path[2][k]) < half ? 1 : 0;
+    }
+    blink(random, visible, o.blinkPerFrame);
+    builder.add(
+      KIND_FREE,
+      -1,
+      xPx,
+      yPx,
+      visible,
+      tracerBrightness(random, o.brightnessE, o.brightnessSpread),
+    );
+  }
+}

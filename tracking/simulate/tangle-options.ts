@@ -1,0 +1,77 @@
+/** A recording to simulate. Image axes; the sheet is centred on z = 0 with a sharp edge. */
+export interface TangleOptions {
+  widthPx: number;
+  heightPx: number;
+  frames: number;
+  pixelSizeM: number;
+  frameIntervalS: number;
+  sheetThicknessM: number;
+  /** Vortex line length per volume, m^-2; 0 for no lines. */
+  lineDensityM2: number;
+  /** Trapped tracers per line length, m^-1. */
+  beadsPerMetre: number;
+  /** Free tracers that the sheet holds in a frame, on average. */
+  freeTracersPerFrame: number;
+  /** Mean of the normal-fluid velocity over the channel, m/s, along `flowDirection`. */
+  vnMPerS: number;
+  /** Drift of the whole tangle along `flowDirection`, m/s; negative is towards the heater. */
+  tangleVelocityMPerS: number;
+  seed: number;
+  /** Unit vector in image axes, default x. */
+  flowDirection?: [number, number];
+  /** Width of the channel across the flow, m; default 1.2 times the image. */
+  channelWidthM?: number;
+  /** R.m.s. velocity of a line per component, m/s, and its correlation time, s. */
+  wobbleMPerS?: number;
+  wobbleTimeS?: number;
+  /** The same for free tracers. */
+  freeWobbleMPerS?: number;
+  freeWobbleTimeS?: number;
+  /** Sudden jumps of a line as after a reconnection, per line and second. */
+  burstsPerLineS?: number;
+  /** Slope of the gentle bends of a line (0 is straight) and their length, m. */
+  bendSlope?: number;
+  bendLengthM?: number;
+  /** Mean photoelectrons of a tracer in a frame, and the spread of its logarithm between tracers. */
+  brightnessE?: number;
+  brightnessSpread?: number;
+  /** Chance per frame that a tracer goes dark for a frame or two. */
+  blinkPerFrame?: number;
+  /** Pairs of trapped tracers that meet and part; extra to the line process. */
+  events?: number;
+}
+
+export type FilledTangleOptions = Required<TangleOptions>;
+
+/** Fills in what a scene leaves open; checks what would make no sense. */
+export function fillTangleOptions(options: TangleOptions): FilledTangleOptions {
+  const { widthPx, heightPx, frames, pixelSizeM, frameIntervalS, sheetThicknessM } = options;
+  for (const [name, value] of Object.entries({
+    widthPx,
+    heightPx,
+    frames,
+    pixelSizeM,
+    frameIntervalS,
+    sheetThicknessM,
+  })) {
+    if (!(value > 0)) throw new RangeError(`${name} must be > 0. Received ${value}.`);
+  }
+  const [fx, fy] = options.flowDirection ?? [1, 0];
+  const across = Math.abs(fy) * widthPx + Math.abs(fx) * heightPx;
+  return {
+    flowDirection: [fx, fy],
+    channelWidthM: 1.2 * across * pixelSizeM,
+    wobbleMPerS: 0.5e-3,
+    wobbleTimeS: 0.1,
+    freeWobbleMPerS: 0.2e-3,
+    freeWobbleTimeS: 0.3,
+    burstsPerLineS: 0,
+    bendSlope: 0.1,
+    bendLengthM: 1e-3,
+    brightnessE: 400,
+    brightnessSpread: 0.2,
+    blinkPerFrame: 0.01,
+    events: 0,
+    ...options,
+  };
+}
