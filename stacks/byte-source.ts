@@ -1,0 +1,82 @@
+import { stat } from 'node:fs/promises';
+import { readFromFile, releaseFile } from './file-handles';
+
+/**
+ * Bytes that can be read at any position: a local file now, an object read by ranges as well as
+ * any other store later. Whoever calls `read` owns the bytes it returns and may change them.
+ */
+export interface ByteSource {
+  readonly sizeBytes: number;
+  /** @throws OutOfRangeError when the range doesn't lie wholly inside the source. */
+  read(offset: number, length: number): Promise<Uint8Array>;
+  close(): Promise<void>;
+}
+
+/** A read that reaches outside the source. */
+export class OutOfRangeError extends RangeError {
+  constructor(
+    readonly offset: number,
+    readonly length: number,
+    readonly sizeBytes: number,
+  ) {
+    super(`Bytes ${offset} to ${offset + length} asked for, but the source has ${sizeBytes} bytes.`);
+    this.name = 'OutOfRangeError';
+  }
+}
+
+/** @throws OutOfRangeError unless `[offset, offset + length)` is a range of whole bytes inside the source. */
+export function assertInside(source: { readonly sizeBytes: number }, offset: number, length: number): void {
+  const whole = Number.isSafeInteger(offset) && Number.isSafeInteger(length);
+  if (!whole || offset < 0 || length < 0 || offset + length > source.sizeBytes) {
+    throw new OutOfRangeError(offset, length, source.sizeBytes);
+  }
+}
+
+/**
+ * A file on disk. Its size is taken once, here; the file is opened at the first read, and closed
+ * again behind the scenes when many other files are in use, so a folder of 100,000 frames needs
+ * few descriptors.
+ */
+export async function fileSource(path: string): Promise<ByteSource> {
+  const { size } = await stat(path);
+  const source = {
+    sizeBytes: size,
+    async read(offset: number, length: number) {
+      assertInside(source, offset, length);
+      // Not from Node's shared pool, so that 16-bit and 32-bit views are aligned.
+      const bytes = Buffer.allocUnsafeSlow(length);
+      const got = await readFromFile(path, bytes, offset);
+      if (got < length) throw new OutOfRangeError(offset, length, offset + got);
+      return bytes;
+    },
+    close: () => releaseFile(path),
+  };
+  return source;
+}
+
+/** Bytes that are in memory already; reads hand out copies. */
+export function memorySource(bytes: Uint8Array): ByteSource {
+  const source = {
+    sizeBytes: bytes.byteLength,
+    async read(offset: number, length: number) {
+      assertInside(source, offset, length);
+      return new Uint8Array(bytes.subarray(offset, offset + length));
+    },
+    async close() {},
+  };
+  return source;
+}
+
+/** The part `[start, start + sizeBytes)` of another source; closing it leaves the other one open. */
+export function rangeSource(whole: ByteSource, start: number, sizeBytes: number): ByteSource {
+  assertInside(whole, start, sizeBytes);
+  const source = {
+    sizeBytes,
+    async read(offset: number, length: number) {
+      assertInside(source, offset, length);
+      return whole.read(start + offset, length);
+    },
+    async close() {},
+  };
+  return source;
+}

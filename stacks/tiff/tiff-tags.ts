@@ -1,0 +1,73 @@
+/** Tag numbers of TIFF 6.0 that matter for grey camera frames. */
+export const TAG = {
+  imageWidth: 256,
+  imageLength: 257,
+  bitsPerSample: 258,
+  compression: 259,
+  photometric: 262,
+  fillOrder: 266,
+  imageDescription: 270,
+  stripOffsets: 273,
+  samplesPerPixel: 277,
+  rowsPerStrip: 278,
+  stripByteCounts: 279,
+  maxSampleValue: 281,
+  planarConfiguration: 284,
+  predictor: 317,
+  colourMap: 320,
+  tileWidth: 322,
+  tileLength: 323,
+  tileOffsets: 324,
+  tileByteCounts: 325,
+  sampleFormat: 339,
+} as const;
+
+/** Bytes of a value of each field type of TIFF 6.0 and BigTIFF. */
+export const TYPE_BYTES: Record<number, number> = {
+  1: 1,
+  2: 1,
+  3: 2,
+  4: 4,
+  5: 8,
+  6: 1,
+  7: 1,
+  8: 2,
+  9: 4,
+  10: 8,
+  11: 4,
+  12: 8,
+  13: 4,
+  16: 8,
+  17: 8,
+  18: 8,
+};
+
+export const COMPRESSION_NAMES: Record<number, string> = {
+  2: 'CCITT run lengths',
+  3: 'CCITT Group 3',
+  4: 'CCITT Group 4',
+  6: 'old JPEG',
+  7: 'JPEG',
+  9: 'JBIG',
+  10: 'JBIG',
+  32809: 'ThunderScan',
+  34661: 'JBIG',
+  34676: 'SGI LogLuv',
+  34712: 'JPEG 2000',
+  34887: 'LERC',
+  34892: 'lossy JPEG',
+  34925: 'LZMA',
+  50000: 'Zstandard',
+  50001: 'WebP',
+  50002: 'JPEG XL',
+};
+
+export const PHOTOMETRIC_NAMES: Record<number, string> = {
+  4: 'transparency mask',
+  6: 'YCbCr',
+  8: 'CIE L*a*b*',
+  9: 'ICC L*a*b*',
+  10: 'ITU L*a*b*',
+  32803: 'colour filter array',
+  34892: 'linear raw',
+};

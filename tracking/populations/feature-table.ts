@@ -1,0 +1,87 @@
+import { trackSlice } from '../track-slice';
+import type { Conditions, Tracks } from '../types';
+import { alongAcross } from '../velocities';
+import { FEATURES, trackFeatures } from './track-features';
+
+/** Features of all tracks with enough positions. */
+export interface FeatureTable {
+  /** Rows. */
+  n: number;
+  /** Track number of a row. */
+  track: Uint32Array;
+  /** n rows of 4 values, SI. */
+  value: Float64Array;
+  /** n rows of 4 measurement variances. */
+  variance: Float64Array;
+  /** Place across the flow, -1 to 1 over the image. */
+  across: Float64Array;
+}
+
+/** Features of every track with at least 8 measured positions. */
+export function featureTable(
+  tracks: Tracks,
+  image: { width: number; height: number },
+  conditions: Pick<Conditions, 'pixelSize_m' | 'frameInterval_s'>,
+  flow: readonly [number, number],
+): FeatureTable {
+  const rows: number[] = [];
+  const value: number[] = [];
+  const variance: number[] = [];
+  const across: number[] = [];
+  const middle = alongAcross((image.width - 1) / 2, (image.height - 1) / 2, flow)[1];
+  const half = (Math.abs(flow[1]) * image.width + Math.abs(flow[0]) * image.height) / 2;
+  for (let i = 0; i < tracks.count; i++) {
+    const features = trackFeatures(
+      trackSlice(tracks, i),
+      conditions.pixelSize_m,
+      conditions.frameInterval_s,
+      flow,
+    );
+    if (!features || features.value.some(Number.isNaN)) continue;
+    rows.push(i);
+    value.push(...features.value);
+    variance.push(...features.variance);
+    across.push((features.acrossPx - middle) / half);
+  }
+  return {
+    n: rows.length,
+    track: Uint32Array.from(rows),
+    value: Float64Array.from(value),
+    variance: Float64Array.from(variance),
+    across: Float64Array.from(across),
+  };
+}
+
+/** Features shifted by their median and divided by 1.4826 times their median absolute deviation. */
+export interface Standardised {
+  value: Float64Array;
+  variance: Float64Array;
+  centre: number[];
+  scale: number[];
+}
+
+export function standardise(table: FeatureTable): Standardised {
+  const value = new Float64Array(table.value.length);
+  const variance = new Float64Array(table.variance.length);
+  const centre: number[] = [];
+  const scale: number[] = [];
+  for (let d = 0; d < FEATURES; d++) {
+    const column = Float64Array.from({ length: table.n }, (_, i) => table.value[i * FEATURES + d]);
+    centre[d] = median(column);
+    const mad = 1.4826 * median(column.map((v) => Math.abs(v - centre[d])));
+    scale[d] = mad > 0 ? mad : 1;
+    for (let i = 0; i < table.n; i++) {
+      value[i * FEATURES + d] = (column[i] - centre[d]) / scale[d];
+      variance[i * FEATURES + d] = table.variance[i * FEATURES + d] / scale[d] ** 2;
+    }
+  }
+  return { value, variance, centre, scale };
+}
+
+/** Median; NaN of nothing. */
+export function median(values: Float64Array): number {
+  const sorted = values.slice().sort();
+  const n = sorted.length;
+  if (n === 0) return Number.NaN;
+  return n % 2 ? sorted[(n - 1) / 2] : (sorted[n / 2 - 1] + sorted[n / 2]) / 2;
+}
