@@ -1,0 +1,12 @@
+import type { QueryInterface } from 'sequelize';
+import * as createTables from './20261201120000-create-tables';
+
+export interface Migration {
+  /** File name without its ending: the same for sources and bundles. */
+  name: string;
+  up(queryInterface: QueryInterface): Promise<void>;
+  down(queryInterface: QueryInterface): Promise<void>;
+}
+
+/** Every migration, oldest first. A migration that has shipped is never edited. */
+export const migrations: Migration[] = [{ name: '20261201120000-create-tables', ...createTables }];
