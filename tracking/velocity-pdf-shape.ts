@@ -3,26 +3,31 @@ import type { Population } from './types';
 export type PdfPopulation = Population | 'all';
 export type VelocityComponent = 'x' | 'y' | 'along' | 'across' | 'speed';
 
-/** The distribution of one velocity component of one population at one lag. */
+/**
+ * The distribution of one velocity component of one population at one lag. Plain numbers, so that
+ * it survives JSON; null stands for unknown.
+ */
 export interface VelocityPdf {
   population: PdfPopulation;
   component: VelocityComponent;
   lagFrames: number;
   lagS: number;
-  /** Bin edges, m/s, one more than bins. */
-  edgesMS: Float64Array;
+  /** Bin edges, m/s, one more than bins; the same for all populations. */
+  edgesMS: number[];
   /** Samples per bin. */
-  count: Uint32Array;
+  count: number[];
   /** Probability density, s/m; its integral is 1. */
-  density: Float64Array;
-  /** Pointwise 95 % band from resampling whole tracks; NaN with fewer than 2 tracks. */
-  densityLow: Float64Array;
-  densityHigh: Float64Array;
+  density: number[];
+  /** Pointwise 95 % band from resampling whole tracks; null with fewer than 2 tracks. */
+  densityLow: (number | null)[];
+  densityHigh: (number | null)[];
   samples: number;
   tracks: number;
   meanMS: number;
-  /** Sample variance (divisor n - 1), (m/s)^2; NaN below 2 samples. */
-  varianceM2S2: number;
-  /** Part of the variance that localization explains, (m/s)^2. */
-  noiseVarianceM2S2: number;
+  /** Sample variance (divisor n - 1), (m/s)^2; null below 2 samples. */
+  varianceM2S2: number | null;
+  /** Part of the variance that localization explains, (m/s)^2; null where positions have no errors. */
+  noiseVarianceM2S2: number | null;
+  /** Excess kurtosis of the samples, noise included; null below 4 samples. */
+  excessKurtosis: number | null;
 }

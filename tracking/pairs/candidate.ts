@@ -4,17 +4,17 @@ export interface SideFit {
   points: number;
   amplitude: number;
   amplitudeError: number;
-  /** Exponent of delta ~ |t - t0|^exponent, and its standard error; NaN where the points carry none. */
-  exponent: number;
-  exponentError: number;
+  /** Exponent of delta ~ |t - t0|^exponent, and its standard error; null where the points carry none. */
+  exponent: number | null;
+  exponentError: number | null;
 }
 
-/** Two tracers that met and parted. */
+/** Two tracers that met and parted. Plain numbers, so that it survives JSON; null stands for unknown. */
 export interface ReconnectionCandidate {
   trackA: number;
   trackB: number;
   t0S: number;
-  t0ErrorS: number;
+  t0ErrorS: number | null;
   /** Middle between the two at t0, px. */
   xPx: number;
   yPx: number;
@@ -28,7 +28,7 @@ export interface ReconnectionCandidate {
   reducedChi2: number;
   /** BIC of a straight fly-by less BIC of the square-root law: above 10 speaks for the law. */
   bicGain: number;
-  /** Chance that independent tracks give an event this good or better. */
+  /** Chance that two independent tracks that come as near give an event this good or better. */
   pChance: number;
   /** Least false discovery rate at which the event is among the discoveries (Benjamini & Hochberg 1995). */
   qValue: number;
@@ -36,14 +36,15 @@ export interface ReconnectionCandidate {
   accepted: boolean;
   /** What it fails, in plain sentences; empty when it passes. */
   failed: string[];
-  /** Separation over the fitted window, for plotting. */
+  /** Separation over the fitted window, for plotting; entry i of each belongs to the same frame. */
   series: {
-    frame: Uint32Array;
-    tS: Float64Array;
-    separationM: Float64Array;
-    errorM: Float64Array;
+    frame: number[];
+    tS: number[];
+    separationM: number[];
+    /** Standard errors of the separation. */
+    errorM: number[];
     /** The fitted square-root law and the fitted fly-by at the same times, m. */
-    lawM: Float64Array;
-    flyByM: Float64Array;
+    lawM: number[];
+    flyByM: number[];
   };
 }

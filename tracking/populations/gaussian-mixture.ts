@@ -93,7 +93,14 @@ function blank(dims: number): Component {
 }
 
 /** Updates one component from the responsibilities; false where it has lost its members. */
-function maximise(data: MixtureData, q: Float64Array, k: number, j: number, c: Component, isStart: boolean): boolean {
+function maximise(
+  data: MixtureData,
+  q: Float64Array,
+  k: number,
+  j: number,
+  c: Component,
+  isStart: boolean,
+): boolean {
   const { n, dims } = data;
   const p = dims + 2;
   const work = new RowWork(dims);

@@ -115,7 +115,9 @@ function msdSlope(slice: TrackSlice, measured: (i: number) => boolean, sigma2Px:
   const ln: { x: number; y: number; error: number }[] = [];
   for (let lag = 1; lag <= lags; lag++) {
     const msd = meanSquare(n, lag, (i, j) =>
-      measured(i) && measured(j) ? (slice.xPx[j] - slice.xPx[i]) ** 2 + (slice.yPx[j] - slice.yPx[i]) ** 2 : Number.NaN,
+      measured(i) && measured(j)
+        ? (slice.xPx[j] - slice.xPx[i]) ** 2 + (slice.yPx[j] - slice.yPx[i]) ** 2
+        : Number.NaN,
     );
     if (msd.samples === 0) continue;
     const signal = Math.max(msd.mean - noise, Math.max(NOISE_FLOOR * noise, 1e-12));
