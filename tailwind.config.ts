@@ -1,6 +1,6 @@
 import type { Config } from 'tailwindcss';
 
-// Values live as custom properties in tokens.css (light on :root, dark on [data-theme=dark]); names only here.
+// Values live as custom properties in app/globals.css (light on :root, dark on [data-theme=dark]); names only here.
 const token = (name: string) => `var(--${name})`;
 const names = [
   'paper',
@@ -57,13 +57,16 @@ export default {
       body: ['14px', '20px'],
       head2: ['16px', '20px'],
       lede: ['19px', '29px'],
+      'lede-narrow': ['17px', '26px'],
       figure: ['22px', '26px'],
       title: ['27px', '32px'],
+      'title-narrow': ['23px', '28px'],
     },
     fontWeight: { text: '400', title: '500', strong: '600' },
     borderRadius: { none: '0', field: '2px', button: '3px', bead: '9999px' },
     boxShadow: { none: 'none', lifted: '0 1px 2px rgb(8 14 18 / .10), 0 12px 32px -8px rgb(8 14 18 / .28)' },
-    screens: { hand: '640px', desk: '1024px', wide: '1440px' },
+    // At 1100 px there is room for the margin column beside the main one.
+    screens: { hand: '640px', desk: '1024px', aside: '1100px', wide: '1440px' },
     extend: {
       spacing: {
         hair: '1px',
