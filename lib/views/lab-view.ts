@@ -1,0 +1,69 @@
+import { z } from 'zod';
+import { ROLES, SCOPES } from '../access';
+import { itemFields, personSchema } from './common';
+
+export const meViewSchema = z.object({
+  id: z.uuid(),
+  name: z.string(),
+  email: z.string(),
+  lab: z.object({ id: z.uuid(), name: z.string(), slug: z.string() }),
+  roles: z.array(z.enum(ROLES)),
+  scopes: z.array(z.enum(SCOPES)),
+  labs: z.array(
+    z.object({ id: z.uuid(), name: z.string(), slug: z.string(), roles: z.array(z.enum(ROLES)) }),
+  ),
+});
+export type MeView = z.infer<typeof meViewSchema>;
+
+export const memberViewSchema = z.object({
+  ...itemFields,
+  person: personSchema.extend({ email: z.string() }),
+  roles: z.array(z.enum(ROLES)),
+});
+export type MemberView = z.infer<typeof memberViewSchema>;
+
+export const tokenViewSchema = z.object({
+  id: z.uuid(),
+  name: z.string(),
+  owner: personSchema,
+  /** First letters of the token, to tell it from others. */
+  hint: z.string(),
+  scopes: z.array(z.enum(SCOPES)),
+  createdAt: z.iso.datetime(),
+  lastUsedAt: z.iso.datetime().nullable(),
+  revokedAt: z.iso.datetime().nullable(),
+});
+export type TokenView = z.infer<typeof tokenViewSchema>;
+
+export const workerViewSchema = z.object({
+  id: z.uuid(),
+  host: z.string(),
+  pid: z.int(),
+  startedAt: z.iso.datetime(),
+  heartbeatAt: z.iso.datetime(),
+  alive: z.boolean(),
+  job: z.object({ kind: z.string(), chunk: z.int() }).nullable(),
+});
+export type WorkerView = z.infer<typeof workerViewSchema>;
+
+export const jobViewSchema = z.object({
+  id: z.uuid(),
+  kind: z.string(),
+  subjectId: z.uuid(),
+  chunk: z.int(),
+  state: z.enum(['waiting', 'running', 'done', 'failed', 'stopped']),
+  attempt: z.int(),
+  progress: z.number(),
+  error: z.object({ code: z.string(), detail: z.string() }).nullable(),
+  createdAt: z.iso.datetime(),
+  updatedAt: z.iso.datetime(),
+});
+export type JobView = z.infer<typeof jobViewSchema>;
+
+export const storageViewSchema = z.object({
+  recordings: z.int(),
+  bytes: z.int(),
+  arrivingBytes: z.int(),
+  freeBytes: z.int().nullable(),
+});
+export type StorageView = z.infer<typeof storageViewSchema>;
