@@ -32,17 +32,18 @@ export function assertInside(source: { readonly sizeBytes: number }, offset: num
   }
 }
 
-/**
- * A file on disk. Its size is taken once, here; the file is opened at the first read, and closed
- * again behind the scenes when many other files are in use, so a folder of 100,000 frames needs
- * few descriptors.
- */
-export async function fileSource(path: string): Promise<ByteSource> {
-  const { size } = await stat(path);
+/** A file of known size; a file that has another size now is refused at its first read. */
+export function lazyFileSource(path: string, sizeBytes: number): ByteSource {
+  let checked = false;
   const source = {
-    sizeBytes: size,
+    sizeBytes,
     async read(offset: number, length: number) {
       assertInside(source, offset, length);
+      if (!checked) {
+        const { size } = await stat(path);
+        if (size !== sizeBytes) throw new RangeError(`The file had ${sizeBytes} bytes, now it has ${size}.`);
+        checked = true;
+      }
       // Not from Node's shared pool, so that 16-bit and 32-bit views are aligned.
       const bytes = Buffer.allocUnsafeSlow(length);
       const got = await readFromFile(path, bytes, offset);
@@ -52,6 +53,15 @@ export async function fileSource(path: string): Promise<ByteSource> {
     close: () => releaseFile(path),
   };
   return source;
+}
+
+/**
+ * A file on disk. Its size is taken once, here; the file is opened at the first read, and closed
+ * again behind the scenes when many other files are in use, so a folder of 100,000 frames needs
+ * few descriptors.
+ */
+export async function fileSource(path: string): Promise<ByteSource> {
+  return lazyFileSource(path, (await stat(path)).size);
 }
 
 /** Bytes that are in memory already; reads hand out copies. */

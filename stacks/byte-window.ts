@@ -6,7 +6,7 @@ const WINDOW_BYTES = 16 * 1024;
 /** Small reads at any place of a source, served from the last stretch read where possible. */
 export class ByteWindow {
   private start = 0;
-  private bytes = new Uint8Array(0);
+  private bytes: Uint8Array = new Uint8Array(0);
 
   constructor(readonly source: ByteSource) {}
 

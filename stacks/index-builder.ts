@@ -4,6 +4,7 @@ import { StackRefusal } from './refusal';
 import { type Segments } from './segments';
 import {
   type ArchiveEntryPlace,
+  type IndexedSource,
   RECORD_BYTES,
   type StackIndex,
   type StackShape,
@@ -52,12 +53,12 @@ export class IndexBuilder {
   }
 
   /** @param frames how many of the frames added belong to the stack: all, or the intact first ones. */
-  build(shape: StackShape, sourceSizesBytes: number[], frames = this.frames): StackIndex {
+  build(shape: StackShape, sources: IndexedSource[], frames = this.frames): StackIndex {
     return {
       ...shape,
       frames,
       layouts: Array.from(this.layouts.keys(), (text) => JSON.parse(text) as FrameLayout),
-      sourceSizesBytes,
+      sources,
       records: this.records.slice(0, frames * RECORD_BYTES),
       segments: this.segments.slice(0, 2 * this.segmentCount),
     };

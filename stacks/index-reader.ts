@@ -5,6 +5,7 @@ import {
   type FrameRecord,
   INDEX_HEAD_BYTES,
   INDEX_MAGIC,
+  type IndexedSource,
   INDEX_VERSION,
   readRecord,
   RECORD_BYTES,
@@ -15,7 +16,7 @@ import {
 export interface IndexReader extends StackShape {
   frames: number;
   layouts: FrameLayout[];
-  sourceSizesBytes: number[];
+  sources: IndexedSource[];
   /** Two short reads, wherever the frame stands. */
   locate(frame: number): Promise<FrameRecord & { segments: Segments }>;
 }

@@ -1,7 +1,10 @@
-import { type ByteSource } from './byte-source';
+import { join } from 'node:path';
+import { type Frame } from '@/tracking/types';
+import { fileSource, lazyFileSource } from './byte-source';
 import { frameReader } from './frame-reader';
 import { type SampleKind } from './frame-layout';
 import { openIndex } from './index-reader';
+import { INDEX_FILE, sourcePath } from './stack-index';
 
 export interface StackReader {
   readonly width: number;
@@ -13,31 +16,25 @@ export interface StackReader {
   /** Largest count a pixel can have, or Infinity for floating point samples. */
   readonly maxCount: number;
   /**
-   * Camera counts of frame `frame`, row by row from the top left pixel, exactly as stored (with
-   * WhiteIsZero turned round, and NaN or infinite pixels replaced by their surroundings).
-   * @param into filled and returned when given: `width * height` entries.
-   * @throws RangeError when there is no such frame, or its data is damaged.
+   * Frame `frame`, from 0: camera counts exactly as stored, with WhiteIsZero turned round, and NaN or
+   * infinite pixels replaced by their surroundings.
+   * @param into its counts are filled and it is returned, when given
+   * @throws RangeError when there is no such frame, its data is damaged, or its file has changed.
    */
-  readFrame(frame: number, into?: Float32Array): Promise<Float32Array>;
+  readFrame(frame: number, into?: Frame): Promise<Frame>;
   /** Closes the sources and the index. */
   close(): Promise<void>;
 }
 
 /**
- * Opens a stack by the frame index that `inspectStack` made: any frame is found in two short reads,
+ * Opens the stack that `inspectStack` indexed in `dir`: any frame is found in two short reads,
  * whatever the number of frames.
- * @param sources the same files in the same order as were inspected
- * @throws RangeError when the index belongs to other files.
+ * @throws the file system's error when there is no index, RangeError when it isn't one of this version.
  */
-export async function openStack(
-  sources: readonly ByteSource[],
-  indexSource: ByteSource,
-): Promise<StackReader> {
+export async function openStack(dir: string): Promise<StackReader> {
+  const indexSource = await fileSource(join(dir, INDEX_FILE));
   const index = await openIndex(indexSource);
-  const sizes = index.sourceSizesBytes;
-  if (sizes.length !== sources.length || sizes.some((size, i) => size !== sources[i]!.sizeBytes)) {
-    throw new RangeError('The frame index belongs to other files: their number or sizes differ.');
-  }
+  const sources = index.sources.map(({ path, sizeBytes }) => lazyFileSource(sourcePath(dir, path), sizeBytes));
   const reader = frameReader(sources, index);
   const { width, height, frames, bitDepth, sampleKind, maxCount } = index;
   return {
@@ -47,18 +44,19 @@ export async function openStack(
     bitDepth,
     sampleKind,
     maxCount,
-    async readFrame(frame, into = new Float32Array(width * height)) {
+    async readFrame(frame, into = { width, height, counts: new Float32Array(width * height) }) {
       if (!Number.isInteger(frame) || frame < 0 || frame >= frames) {
         throw new RangeError(`The stack has frames 0 to ${frames - 1}. Asked for ${frame}.`);
       }
-      if (into.length !== width * height) {
-        throw new RangeError(`A frame has ${width * height} pixels. Received room for ${into.length}.`);
+      if (into.width !== width || into.height !== height || into.counts.length !== width * height) {
+        throw new RangeError(`Frames are ${width} x ${height}. Received room for ${into.width} x ${into.height}.`);
       }
-      await reader.read(frame, into);
+      await reader.read(frame, into.counts);
       return into;
     },
     async close() {
-      await Promise.all([indexSource, ...sources].map((source) => source.close()));
+      await indexSource.close();
+      await Promise.all(sources.map((source) => source.close()));
     },
   };
 }

@@ -4,13 +4,20 @@ export interface StackNote {
   detail: string;
 }
 
+/** What could be used instead. */
+export interface RefusalOffer {
+  /** So many first pages are intact. */
+  usePages?: number;
+  /** So many colour channels are there to choose from. */
+  channels?: number;
+}
+
 /** The answer that a stack can't be used, with the sentence for the person who sent it. */
 export class StackRefusal extends Error {
   constructor(
     readonly code: string,
     readonly detail: string,
-    /** What the person could choose instead: how many pages are intact, or how many channels there are. */
-    readonly choice: { intactPages?: number; channels?: number } = {},
+    readonly offer: RefusalOffer = {},
     options?: ErrorOptions,
   ) {
     super(detail, options);

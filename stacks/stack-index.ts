@@ -1,3 +1,4 @@
+import { isAbsolute, join, relative, sep } from 'node:path';
 import { type FrameLayout, type SampleKind } from './frame-layout';
 
 /** Facts about a stack that hold for all of its frames. */
@@ -11,6 +12,12 @@ export interface StackShape {
   maxCount: number;
 }
 
+/** A file of a stack: its place from the index's folder when it lies in there, else from the root. */
+export interface IndexedSource {
+  path: string;
+  sizeBytes: number;
+}
+
 /**
  * Where each frame of a stack lies. Frame `k` owns record `k`: its source, its layout and a run of
  * the segment table. Frames of one archive entry that is stored compressed carry the entry's place.
@@ -18,8 +25,8 @@ export interface StackShape {
 export interface StackIndex extends StackShape {
   frames: number;
   layouts: FrameLayout[];
-  /** Sizes of the sources that the index was made for, bytes. */
-  sourceSizesBytes: number[];
+  /** The files that the index was made for. */
+  sources: IndexedSource[];
   /** `frames` records of `RECORD_BYTES` bytes each. */
   records: Uint8Array;
   /** `offset0, length0, offset1, length1, ...`, bytes, inside the source or the expanded entry. */
@@ -42,6 +49,8 @@ export interface FrameRecord {
   entry: ArchiveEntryPlace | null;
 }
 
+/** Name of the index in a stack's folder. */
+export const INDEX_FILE = 'index.bin';
 export const INDEX_MAGIC = 'BLIX';
 export const INDEX_VERSION = 1;
 /** Magic, version, bytes of the description, bytes of a record, frames, segments. */
@@ -77,4 +86,15 @@ export function readRecord(view: DataView, at: number): FrameRecord {
           }
         : null,
   };
+}
+
+/** A path as the index keeps it. */
+export function indexedPath(dir: string, path: string): string {
+  const inside = relative(dir, path);
+  return inside.startsWith('..') || isAbsolute(inside) ? path : inside.split(sep).join('/');
+}
+
+/** The inverse of `indexedPath`. */
+export function sourcePath(dir: string, path: string): string {
+  return isAbsolute(path) ? path : join(dir, path);
 }

@@ -44,18 +44,18 @@ function readablePages(intact: number): string {
 
 /** The refusal for a page list or page that leads outside the file. */
 export function judgeBrokenEnd(end: BrokenEnd): StackRefusal {
-  const choice = end.intactPages > 0 ? { intactPages: end.intactPages } : {};
+  const offer = end.intactPages > 0 ? { usePages: end.intactPages } : {};
   if (looksCut(end)) {
     const cut = end.intactPages + 1;
     return new StackRefusal(
       'STACK_TRUNCATED',
       `The file ends inside page ${cut} of at least ${Math.max(cut, end.knownPages)}. ${readablePages(end.intactPages)}`,
-      choice,
+      offer,
     );
   }
   return new StackRefusal(
     'TIFF_BAD_OFFSET',
     `Page ${end.pointingPage} points to byte ${end.pointsTo}, but the file has ${end.sizeBytes} bytes.`,
-    choice,
+    offer,
   );
 }
