@@ -31,6 +31,9 @@ export class Run extends Model<InferAttributes<Run>, InferCreationAttributes<Run
   declare gravityDirection: CreationOptional<[number, number] | null>;
   declare tracer: CreationOptional<Tracer | null>;
   declare channel: CreationOptional<Channel | null>;
+  declare tracersPerAreaM2: CreationOptional<number | null>;
+  declare gammaSM2: CreationOptional<number | null>;
+  declare v0MS: CreationOptional<number | null>;
   declare createdBy: CreationOptional<string | null>;
   declare revision: CreationOptional<number>;
   declare deletedAt: CreationOptional<Date | null>;
@@ -60,6 +63,9 @@ export class Run extends Model<InferAttributes<Run>, InferCreationAttributes<Run
         gravityDirection: DataTypes.ARRAY(DataTypes.DOUBLE),
         tracer: DataTypes.JSONB,
         channel: DataTypes.JSONB,
+        tracersPerAreaM2: { type: DataTypes.DOUBLE, field: 'tracers_per_area_m2' },
+        gammaSM2: { type: DataTypes.DOUBLE, field: 'gamma_s_m2' },
+        v0MS: { type: DataTypes.DOUBLE, field: 'v0_m_s' },
         createdBy: DataTypes.UUID,
         revision: DataTypes.INTEGER,
         deletedAt: DataTypes.DATE,

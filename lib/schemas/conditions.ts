@@ -16,6 +16,9 @@ export const CONDITION_BOUNDS = {
   'tracer.density_kg_m3': { name: 'Tracer density', above: 0, max: 25_000, unit: 'kg/m3', siPerUnit: 1 },
   'channel.width_m': { name: 'Channel width', above: 0, max: 10, unit: 'mm', siPerUnit: 1e-3 },
   'channel.depth_m': { name: 'Channel depth', above: 0, max: 10, unit: 'mm', siPerUnit: 1e-3 },
+  tracersPerArea_m2: { name: 'Tracers per area', above: 0, max: 1e10, unit: 'mm^-2', siPerUnit: 1e6 },
+  gamma_s_m2: { name: 'Gamma', above: 0, max: 1e8, unit: 's/cm2', siPerUnit: 1e4 },
+  v0_m_s: { name: 'Critical velocity', min: 0, max: 1, unit: 'mm/s', siPerUnit: 1e-3 },
   'channel.length_m': { name: 'Channel length', above: 0, max: 100, unit: 'mm', siPerUnit: 1e-3 },
 } as const satisfies Record<string, QuantityBounds>;
 
@@ -76,6 +79,11 @@ export const runConditionsSchema = z.strictObject({
   heatLeak_W: optional('heatLeak_W'),
   gravityDirection: direction('Gravity direction').nullish(),
   channel: channelSchema.nullish(),
+  /** Tracers seen per area of the sheet, when known or planned. */
+  tracersPerArea_m2: optional('tracersPerArea_m2'),
+  /** gamma and v_0 of L^1/2 = gamma (v_ns - v_0), where the laboratory knows its own. */
+  gamma_s_m2: optional('gamma_s_m2'),
+  v0_m_s: optional('v0_m_s'),
 });
 
 export type RunConditionsInput = z.infer<typeof runConditionsSchema>;
