@@ -1,0 +1,143 @@
+import type { Spots } from './types';
+
+/** The arrays of `Spots`, in the order in which they are stored. */
+const FLOAT_COLUMNS = ['xPx', 'yPx', 'sxPx', 'syPx', 'brightness', 'snr'] as const;
+
+/** "BDSP" read as a little-endian number. */
+const MAGIC = 0x50534442;
+const VERSION = 1;
+const HEADER_BYTES = 16;
+const BYTES_PER_SPOT = 4 + 4 * FLOAT_COLUMNS.length + 1;
+
+/** Takes spots one by one and grows as needed; reuse it by `clear`. */
+export interface SpotSink {
+  readonly count: number;
+  push(
+    frame: number,
+    xPx: number,
+    yPx: number,
+    sxPx: number,
+    syPx: number,
+    brightness: number,
+    snr: number,
+    flags: number,
+  ): void;
+  /** Copies of what was pushed so far. */
+  spots(): Spots;
+  clear(): void;
+}
+
+/** @param room spots that fit before the arrays grow for the first time. */
+export function createSpotSink(room = 1024): SpotSink {
+  let held = emptySpots(Math.max(1, room));
+  let count = 0;
+  const grow = () => {
+    const wider = emptySpots(2 * held.frame.length);
+    copySpots(held, wider, 0, count);
+    held = wider;
+  };
+  return {
+    get count() {
+      return count;
+    },
+    push(frame, xPx, yPx, sxPx, syPx, brightness, snr, flags) {
+      if (count === held.frame.length) grow();
+      held.frame[count] = frame;
+      held.xPx[count] = xPx;
+      held.yPx[count] = yPx;
+      held.sxPx[count] = sxPx;
+      held.syPx[count] = syPx;
+      held.brightness[count] = brightness;
+      held.snr[count] = snr;
+      held.flags[count] = flags;
+      count++;
+    },
+    spots() {
+      const out = emptySpots(count);
+      copySpots(held, out, 0, count);
+      return out;
+    },
+    clear() {
+      count = 0;
+    },
+  };
+}
+
+/** Arrays of zeros for `count` spots. */
+export function emptySpots(count: number): Spots {
+  return {
+    count,
+    frame: new Uint32Array(count),
+    xPx: new Float32Array(count),
+    yPx: new Float32Array(count),
+    sxPx: new Float32Array(count),
+    syPx: new Float32Array(count),
+    brightness: new Float32Array(count),
+    snr: new Float32Array(count),
+    flags: new Uint8Array(count),
+  };
+}
+
+/**
+ * Spots of runs of frames put one behind the other, in the order given.
+ *
+ * @throws RangeError where a run begins before the one in front of it ends: linking needs frames in order.
+ */
+export function concatSpots(runs: readonly Spots[]): Spots {
+  const out = emptySpots(runs.reduce((sum, run) => sum + run.count, 0));
+  let at = 0;
+  for (const run of runs) {
+    if (at > 0 && run.count > 0 && run.frame[0] < out.frame[at - 1]) {
+      throw new RangeError(`Spots of frame ${run.frame[0]} came after those of frame ${out.frame[at - 1]}.`);
+    }
+    copySpots(run, out, at, run.count);
+    at += run.count;
+  }
+  return out;
+}
+
+/**
+ * Spots as bytes: magic, version, count, 0 (four 32-bit numbers), then the arrays one behind the
+ * other, all little-endian.
+ */
+export function encodeSpots(spots: Spots): Uint8Array {
+  const bytes = new Uint8Array(HEADER_BYTES + spots.count * BYTES_PER_SPOT);
+  new Uint32Array(bytes.buffer, 0, 4).set([MAGIC, VERSION, spots.count, 0]);
+  let at = HEADER_BYTES;
+  new Uint32Array(bytes.buffer, at, spots.count).set(spots.frame.subarray(0, spots.count));
+  at += 4 * spots.count;
+  for (const column of FLOAT_COLUMNS) {
+    new Float32Array(bytes.buffer, at, spots.count).set(spots[column].subarray(0, spots.count));
+    at += 4 * spots.count;
+  }
+  bytes.set(spots.flags.subarray(0, spots.count), at);
+  return bytes;
+}
+
+/** @throws RangeError when the bytes are not spots of this version or end too early. */
+export function decodeSpots(bytes: Uint8Array): Spots {
+  if (bytes.length < HEADER_BYTES) {
+    throw new RangeError(`Got ${bytes.length} bytes when spots have a header of ${HEADER_BYTES}.`);
+  }
+  // A copy starts at an address that 32-bit views may start at; the bytes received may not.
+  const aligned = bytes.slice().buffer;
+  const [magic, version, count] = new Uint32Array(aligned, 0, 4);
+  if (magic !== MAGIC) throw new RangeError(`These bytes are not spots (they begin with ${magic}).`);
+  if (version !== VERSION) throw new RangeError(`Got spots v${version} when expected v${VERSION}.`);
+  const expected = HEADER_BYTES + count * BYTES_PER_SPOT;
+  if (bytes.length !== expected) {
+    throw new RangeError(`Got ${bytes.length} bytes when ${count} spots have ${expected}.`);
+  }
+  let at = HEADER_BYTES;
+  const frame = new Uint32Array(aligned, at, count);
+  const columns = FLOAT_COLUMNS.map(() => new Float32Array(aligned, (at += 4 * count), count));
+  const [xPx, yPx, sxPx, syPx, brightness, snr] = columns;
+  const flags = new Uint8Array(aligned, at + 4 * count, count);
+  return { count, frame, xPx, yPx, sxPx, syPx, brightness, snr, flags };
+}
+
+function copySpots(from: Spots, to: Spots, at: number, count: number): void {
+  to.frame.set(from.frame.subarray(0, count), at);
+  for (const column of FLOAT_COLUMNS) to[column].set(from[column].subarray(0, count), at);
+  to.flags.set(from.flags.subarray(0, count), at);
+}
