@@ -1,15 +1,7 @@
 import type { ReactNode } from 'react';
 
 export type BeadState =
-  | 'waiting'
-  | 'running'
-  | 'done'
-  | 'failed'
-  | 'stopped'
-  | 'stale'
-  | 'signed'
-  | 'warning'
-  | 'caution';
+  'waiting' | 'running' | 'done' | 'failed' | 'stopped' | 'stale' | 'signed' | 'warning' | 'caution';
 
 // The shape tells the state; the hue only repeats it.
 const GLYPHS: Record<BeadState, ReactNode> = {
@@ -27,9 +19,7 @@ const GLYPHS: Record<BeadState, ReactNode> = {
       <path d="M3 3l5 5M8 3l-5 5" />
     </g>
   ),
-  stopped: (
-    <rect x="1.5" y="1.5" width="8" height="8" className="fill-none stroke-ink-2" strokeWidth="1.5" />
-  ),
+  stopped: <rect x="1.5" y="1.5" width="8" height="8" className="fill-none stroke-ink-2" strokeWidth="1.5" />,
   stale: (
     <circle
       cx="5.5"
