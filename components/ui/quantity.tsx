@@ -13,8 +13,16 @@ export function Unit({ children }: { children: string }) {
   );
 }
 
-/** A symbol set as in print: letter in italics, a word as upright subscript. `<Symbol letter="v" sub="ns" />` */
-export function Symbol({ letter, sub, children }: { letter: string; sub?: string; children?: ReactNode }) {
+/** A symbol set as in print: letter in italics, a word as upright subscript. `<QuantitySymbol letter="v" sub="ns" />` */
+export function QuantitySymbol({
+  letter,
+  sub,
+  children,
+}: {
+  letter: string;
+  sub?: string;
+  children?: ReactNode;
+}) {
   return (
     <span className="whitespace-nowrap">
       <i>{letter}</i>

@@ -85,7 +85,7 @@ export function Row({ selected, total, className = '', ...rest }: RowProps) {
     : total
       ? 'font-strong [&>*]:border-b [&>*]:border-t [&>*]:border-ink'
       : 'hover:bg-leaf';
-  return <tr aria-selected={selected || undefined} className={`${look} ${className}`} {...rest} />;
+  return <tr aria-current={selected || undefined} className={`${look} ${className}`} {...rest} />;
 }
 
 interface CellProps extends ComponentPropsWithoutRef<'td'> {
