@@ -1,8 +1,7 @@
 import type { FlowMeasures, ImageSize, MeasureFlowOptions } from './flow-measures';
-import { featureTable } from './populations/feature-table';
+import { findPopulations } from './populations/populations';
 import { trackMeans } from './track-means';
 import type { Conditions, Recipe, Tracks } from './types';
-import { unitFlow } from './velocities';
 
 export type { FlowMeasures, ImageSize, MeasureFlowOptions } from './flow-measures';
 
@@ -21,23 +20,15 @@ export function measureFlow(
 ): FlowMeasures {
   const progress = options.onProgress ?? (() => undefined);
   progress(0, 'populations');
-  const table = featureTable(tracks, image, conditions, unitFlow(conditions) ?? [1, 0]);
+  const found = findPopulations(tracks, image, conditions, recipe);
   return {
     tracks: {
-      population: new Uint8Array(tracks.count).fill(2),
-      pTrapped: new Float32Array(tracks.count).fill(Number.NaN),
+      population: found.population,
+      pTrapped: found.pTrapped,
       line: new Int32Array(tracks.count).fill(-1),
       ...trackMeans(tracks, conditions, recipe.lagsFrames[0]),
     },
-    populations: {
-      counts: { trapped: 0, free: 0, undecided: tracks.count },
-      judged: table.n,
-      groups: [],
-      bic: [null, null, null],
-      ashmanD: null,
-      trappedFraction: null,
-      note: 'Populations were not told apart.',
-    },
+    populations: found.summary,
     pdfs: [],
     pairs: { tested: 0, accepted: 0, expectedByChance: null, surrogates: 0, note: '' },
     candidates: [],

@@ -52,7 +52,13 @@ export function featureTable(
   };
 }
 
-/** Features shifted by their median and divided by 1.4826 times their median absolute deviation. */
+/** A feature that is nearly the same for most tracks is not blown up beyond this part of its spread. */
+const SCALE_OF_SD_MIN = 0.2;
+
+/**
+ * Features shifted by their median and divided by 1.4826 times their median absolute deviation, or
+ * by their typical measurement error or a part of their standard deviation where those are larger.
+ */
 export interface Standardised {
   value: Float64Array;
   variance: Float64Array;
@@ -69,7 +75,9 @@ export function standardise(table: FeatureTable): Standardised {
     const column = Float64Array.from({ length: table.n }, (_, i) => table.value[i * FEATURES + d]);
     centre[d] = median(column);
     const mad = 1.4826 * median(column.map((v) => Math.abs(v - centre[d])));
-    scale[d] = mad > 0 ? mad : 1;
+    const error = median(column.map((_, i) => Math.sqrt(table.variance[i * FEATURES + d])));
+    const least = Math.max(mad, error, SCALE_OF_SD_MIN * standardDeviation(column));
+    scale[d] = least > 0 ? least : 1;
     for (let i = 0; i < table.n; i++) {
       value[i * FEATURES + d] = (column[i] - centre[d]) / scale[d];
       variance[i * FEATURES + d] = table.variance[i * FEATURES + d] / scale[d] ** 2;
@@ -84,4 +92,9 @@ export function median(values: Float64Array): number {
   const n = sorted.length;
   if (n === 0) return Number.NaN;
   return n % 2 ? sorted[(n - 1) / 2] : (sorted[n / 2 - 1] + sorted[n / 2]) / 2;
+}
+
+function standardDeviation(values: Float64Array): number {
+  const mean = values.reduce((sum, v) => sum + v, 0) / values.length;
+  return Math.sqrt(values.reduce((sum, v) => sum + (v - mean) ** 2, 0) / values.length);
 }

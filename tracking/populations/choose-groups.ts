@@ -1,0 +1,120 @@
+import type { FeatureTable, Standardised } from './feature-table';
+import { fitGroups } from './fit-groups';
+import {
+  mixtureParameters,
+  meanAt,
+  responsibilities,
+  type Mixture,
+  type MixtureData,
+} from './gaussian-mixture';
+import { FEATURES } from './track-features';
+
+/** Two groups must better the criterion by this much (Kass & Raftery 1995: very strong). */
+const BIC_GAIN_MIN = 10;
+/** And lie this many widths apart in velocity or in transverse motion (Ashman, Bird & Zepf 1994). */
+const ASHMAN_D_MIN = 2;
+/** And the smaller must be more than a few odd tracks. */
+const SMALLER_WEIGHT_MIN = 0.03;
+const SMALLER_TRACKS_MIN = 3;
+/** Fewer rows than twice the parameters of two groups can't tell one from two. */
+const ROWS_MIN = 40;
+
+/** One group of tracks, in the units of the features. */
+export interface GroupMeans {
+  weight: number;
+  /** Mean velocity along the flow over its members, m/s, and their standard deviation. */
+  alongMS: number;
+  alongSdMS: number;
+  /** Mean of ln transverse r.m.s. velocity (m/s) and standard deviation. */
+  lnTransverse: number;
+  lnTransverseSd: number;
+}
+
+export interface ChosenGroups {
+  /** BIC for 1, 2 and 3 groups; null where the fit did not work. */
+  bic: (number | null)[];
+  ashmanD: number | null;
+  groups: GroupMeans[];
+  /** Rows of as many probabilities as groups. */
+  probability: Float64Array;
+}
+
+/** Schwarz's Bayesian information criterion: parameters * ln n - 2 ln L. */
+export function bayesianInformation(parameters: number, n: number, lnLikelihood: number): number {
+  return parameters * Math.log(n) - 2 * lnLikelihood;
+}
+
+/** Ashman's distance of two groups: sqrt 2 |mu1 - mu2| / sqrt(s1^2 + s2^2). */
+export function ashmanDistance(mean1: number, mean2: number, sd1: number, sd2: number): number {
+  return (Math.SQRT2 * Math.abs(mean1 - mean2)) / Math.hypot(sd1, sd2);
+}
+
+/**
+ * One group of tracks or two: two only if the criterion says so clearly, they lie apart and the
+ * smaller one counts. A third group is fitted for the record but never named.
+ */
+export function chooseGroups(table: FeatureTable, scaled: Standardised, seed: number): ChosenGroups {
+  const data: MixtureData = {
+    n: table.n,
+    dims: FEATURES,
+    value: scaled.value,
+    variance: scaled.variance,
+    coordinate: table.across,
+  };
+  const fits: (Mixture | null)[] = [1, 2, 3].map((k) =>
+    k > 1 && table.n < ROWS_MIN ? null : fitGroups(data, k, seed),
+  );
+  const full = fits.map((fit) => (fit ? responsibilities(data, fit.components) : null));
+  const bic = full.map((at, i) =>
+    at && Number.isFinite(at.lnLikelihood)
+      ? bayesianInformation(mixtureParameters(i + 1, FEATURES), table.n, at.lnLikelihood)
+      : null,
+  );
+  const one = bic[0];
+  const two = bic[1];
+  let ashmanD: number | null = null;
+  if (one !== null && two !== null && fits[1] && full[1]) {
+    const groups = groupMeans(table, scaled, fits[1], full[1].responsibilities);
+    const [a, b] = groups;
+    ashmanD = Math.max(
+      ashmanDistance(a.alongMS, b.alongMS, a.alongSdMS, b.alongSdMS),
+      ashmanDistance(a.lnTransverse, b.lnTransverse, a.lnTransverseSd, b.lnTransverseSd),
+    );
+    const smaller = Math.min(a.weight, b.weight);
+    const counts = smaller > SMALLER_WEIGHT_MIN && smaller * table.n > SMALLER_TRACKS_MIN;
+    if (one - two > BIC_GAIN_MIN && ashmanD > ASHMAN_D_MIN && counts) {
+      return { bic, ashmanD, groups, probability: full[1].responsibilities };
+    }
+  }
+  const single = fits[0];
+  const groups = single ? groupMeans(table, scaled, single, new Float64Array(table.n).fill(1)) : [];
+  return { bic, ashmanD, groups, probability: new Float64Array(table.n).fill(1) };
+}
+
+function groupMeans(table: FeatureTable, scaled: Standardised, fit: Mixture, q: Float64Array): GroupMeans[] {
+  const k = fit.components.length;
+  const mean = new Float64Array(FEATURES);
+  return fit.components.map((component, j) => {
+    let total = 0;
+    let along = 0;
+    const noise = [0, 0];
+    for (let i = 0; i < table.n; i++) {
+      const w = q[i * k + j];
+      total += w;
+      meanAt(component, table.across[i], FEATURES, mean);
+      along += w * mean[0];
+      noise[0] += w * scaled.variance[i * FEATURES];
+      noise[1] += w * scaled.variance[i * FEATURES + 1];
+    }
+    // Widths as they are seen, measurement errors included: that is what keeps two groups apart.
+    const sd = (d: number) =>
+      scaled.scale[d] * Math.sqrt(component.covariance[d * FEATURES + d] + noise[d] / total);
+    return {
+      weight: total / table.n,
+      alongMS: scaled.centre[0] + (scaled.scale[0] * along) / total,
+      alongSdMS: sd(0),
+      lnTransverse: scaled.centre[1] + scaled.scale[1] * mean[1],
+      lnTransverseSd: sd(1),
+    };
+  });
+}

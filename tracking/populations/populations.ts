@@ -1,0 +1,137 @@
+import { expectedFlow, type ExpectedFlow } from '../flow/expected-flow';
+import type { GroupName, PopulationSummary } from '../flow-measures';
+import { POPULATIONS, type Conditions, type Recipe, type Tracks } from '../types';
+import { unitFlow } from '../velocities';
+import { chooseGroups, type ChosenGroups } from './choose-groups';
+import { featureTable, standardise, type FeatureTable } from './feature-table';
+import { nameSingleGroup, nameTwoGroups, type Naming } from './name-groups';
+import { FEATURES } from './track-features';
+import { transverseKurtosis } from './transverse-kurtosis';
+import { wilsonInterval } from './wilson';
+
+export const TRAPPED = POPULATIONS.indexOf('trapped');
+export const FREE = POPULATIONS.indexOf('free');
+export const UNDECIDED = POPULATIONS.indexOf('undecided');
+
+/** Fewer tracks than this can't be told apart, nor named. */
+const JUDGED_MIN = 10;
+/** Lag of the kurtosis, frames: the one of the transverse feature. */
+const KURTOSIS_LAG = 2;
+
+export interface TrackPopulations {
+  /** Codes of `POPULATIONS`, one per track. */
+  population: Uint8Array;
+  /** Probability of being trapped, NaN where there is none. */
+  pTrapped: Float32Array;
+  summary: PopulationSummary;
+}
+
+/**
+ * Which tracks are trapped on lines and which move freely. A mixture of one or two groups is
+ * fitted to features of the tracks, the groups are named by physics, and a track is named where
+ * its probability allows. Tracks below 8 positions stay undecided.
+ */
+export function findPopulations(
+  tracks: Tracks,
+  image: { width: number; height: number },
+  conditions: Conditions,
+  recipe: Pick<Recipe, 'trappedFrom' | 'seed'>,
+): TrackPopulations {
+  const population = new Uint8Array(tracks.count).fill(UNDECIDED);
+  const pTrapped = new Float32Array(tracks.count).fill(Number.NaN);
+  const direction = unitFlow(conditions);
+  const flow = direction ?? [1, 0];
+  const table = featureTable(tracks, image, conditions, flow);
+  if (table.n < JUDGED_MIN) {
+    const note = `Only ${table.n} tracks are long enough to be judged; all stay undecided.`;
+    const none: ChosenGroups = {
+      bic: [null, null, null],
+      ashmanD: null,
+      groups: [],
+      probability: new Float64Array(),
+    };
+    return { population, pTrapped, summary: summarise(population, table, none, { names: [], note }) };
+  }
+  const chosen = chooseGroups(table, standardise(table), recipe.seed);
+  const expectation = expectedFlow(conditions);
+  const known = 'refused' in expectation ? null : expectation;
+  // Without a direction the velocity along the flow means nothing.
+  const expected = known && (direction || known.flow.vnMS === 0) ? known : null;
+  const naming =
+    chosen.groups.length === 2
+      ? nameTwoGroups(chosen.groups, expected)
+      : nameOne(tracks, table, chosen, conditions, flow, expected);
+  const trapped = naming.names.indexOf('trapped');
+  for (let i = 0; i < table.n; i++) {
+    const track = table.track[i];
+    if (chosen.groups.length === 2 && trapped >= 0) {
+      const p = chosen.probability[2 * i + trapped];
+      pTrapped[track] = p;
+      if (p >= recipe.trappedFrom) population[track] = TRAPPED;
+      else if (p <= 1 - recipe.trappedFrom) population[track] = FREE;
+    } else if (naming.names[0] === 'trapped') {
+      population[track] = TRAPPED;
+    } else if (naming.names[0] === 'free') {
+      population[track] = FREE;
+    }
+  }
+  return { population, pTrapped, summary: summarise(population, table, chosen, naming) };
+}
+
+function nameOne(
+  tracks: Tracks,
+  table: FeatureTable,
+  chosen: ChosenGroups,
+  conditions: Conditions,
+  flow: readonly [number, number],
+  expected: ExpectedFlow | null,
+): Naming {
+  if (chosen.groups.length === 0)
+    return { names: [], note: 'The tracks could not be described by a mixture.' };
+  let mean = 0;
+  let square = 0;
+  let clear = 0;
+  for (let i = 0; i < table.n; i++) {
+    const slope = table.value[i * FEATURES + 3];
+    mean += slope / table.n;
+    square += (slope * slope) / table.n;
+    // The error of ln r.m.s. from noise alone is small where motion stands clear of noise.
+    if (table.variance[i * FEATURES + 1] < 0.25) clear++;
+  }
+  const single = {
+    group: chosen.groups[0],
+    tracks: table.n,
+    transverse: transverseKurtosis(tracks, table.track, conditions, flow, KURTOSIS_LAG),
+    msdSlope: { value: mean, error: Math.sqrt(Math.max(0, square - mean * mean) / table.n) },
+    aboveNoise: clear > table.n / 2,
+  };
+  return nameSingleGroup(single, expected);
+}
+
+function summarise(
+  population: Uint8Array,
+  table: FeatureTable,
+  chosen: ChosenGroups,
+  naming: Naming,
+): PopulationSummary {
+  const counts = { trapped: 0, free: 0, undecided: 0 };
+  for (const code of population) counts[POPULATIONS[code]]++;
+  const named = counts.trapped + counts.free;
+  const isSplit = naming.names.length === 2 && naming.names.includes('trapped') && named > 0;
+  return {
+    counts,
+    judged: table.n,
+    groups: chosen.groups.map((group, i) => ({
+      name: naming.names[i] ?? ('unnamed' satisfies GroupName),
+      weight: group.weight,
+      meanAlongMS: group.alongMS,
+      transverseRmsMS: Math.exp(group.lnTransverse),
+    })),
+    bic: chosen.bic,
+    ashmanD: chosen.ashmanD,
+    trappedFraction: isSplit
+      ? { value: counts.trapped / named, ...wilsonInterval(counts.trapped, named), level: 0.95 }
+      : null,
+    note: naming.note,
+  };
+}
