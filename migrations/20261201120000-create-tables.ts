@@ -13,9 +13,8 @@ const tables = [
 ];
 
 export async function up({ sequelize }: QueryInterface): Promise<void> {
-  await sequelize.transaction(async (transaction) => {
-    for (const statement of statements) await sequelize.query(statement, { transaction });
-  });
+  // The runner holds a transaction around every migration.
+  for (const statement of statements) await sequelize.query(statement);
 }
 
 export async function down({ sequelize }: QueryInterface): Promise<void> {

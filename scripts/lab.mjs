@@ -1,0 +1,4 @@
+// `npm run lab`: makes a laboratory and prints an invitation link.
+import { runEntry } from './platform/run-entry.mjs';
+
+await runEntry('lab', { database: 'needed' });

@@ -1,0 +1,43 @@
+import { availableParallelism } from 'node:os';
+import { dataFolder } from './paths.mjs';
+import { PlainStop } from './plain-stop.mjs';
+
+const PORT_MAX = 65_535;
+const WORKERS_MAX = 64;
+
+/**
+ * What the environment asks of a start.
+ * @param {NodeJS.ProcessEnv} env
+ */
+export function readStartSettings(env) {
+  const port = wholeNumber(env, 'PORT', { fallback: 3000, low: 1, high: PORT_MAX });
+  const databaseUrl = env.DATABASE_URL || null;
+  if (databaseUrl && !/^postgres(ql)?:\/\//.test(databaseUrl))
+    throw new PlainStop('DATABASE_URL must begin with postgres:// or postgresql://.', 2);
+  return {
+    port,
+    url: `http://127.0.0.1:${port}`,
+    data: dataFolder(env),
+    databaseUrl,
+    workers: wholeNumber(env, 'BEADLINE_WORKERS', {
+      fallback: availableParallelism(),
+      low: 0,
+      high: WORKERS_MAX,
+    }),
+    withDemo: env.BEADLINE_DEMO !== '0',
+  };
+}
+
+/**
+ * @param {NodeJS.ProcessEnv} env
+ * @param {string} name
+ * @param {{ fallback: number, low: number, high: number }} range
+ */
+function wholeNumber(env, name, { fallback, low, high }) {
+  const text = env[name]?.trim();
+  if (!text) return fallback;
+  const value = Number(text);
+  if (!Number.isInteger(value) || value < low || value > high)
+    throw new PlainStop(`${name} must be a whole number from ${low} to ${high}. Received '${text}'.`, 2);
+  return value;
+}
