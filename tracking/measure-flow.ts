@@ -2,6 +2,7 @@ import type { FlowMeasures, ImageSize, MeasureFlowOptions } from './flow-measure
 import { findPopulations } from './populations/populations';
 import { trackMeans } from './track-means';
 import type { Conditions, Recipe, Tracks } from './types';
+import { velocityPdfs } from './velocity-pdfs/velocity-pdfs';
 
 export type { FlowMeasures, ImageSize, MeasureFlowOptions } from './flow-measures';
 
@@ -21,6 +22,8 @@ export function measureFlow(
   const progress = options.onProgress ?? (() => undefined);
   progress(0, 'populations');
   const found = findPopulations(tracks, image, conditions, recipe);
+  progress(0.3, 'velocities');
+  const pdfs = velocityPdfs(tracks, found.population, conditions, recipe);
   return {
     tracks: {
       population: found.population,
@@ -29,7 +32,7 @@ export function measureFlow(
       ...trackMeans(tracks, conditions, recipe.lagsFrames[0]),
     },
     populations: found.summary,
-    pdfs: [],
+    pdfs,
     pairs: { tested: 0, accepted: 0, expectedByChance: null, surrogates: 0, note: '' },
     candidates: [],
     estimates: [],

@@ -1,0 +1,68 @@
+import type { Random } from '../random';
+import { sortedQuantile } from '../quantile';
+
+/** Tracks are resampled in this many random packs at most: its own error is then 5 % of the band. */
+export const PACKS_MAX = 200;
+
+/** Zero of n samples still allows 3/n at 95 % (rule of three). */
+const RULE_OF_THREE = 3;
+
+/** Multiplicities of packs in every draw, draws rows of packs. */
+export function bootstrapWeights(random: Random, packs: number, draws: number): Uint16Array {
+  const weights = new Uint16Array(packs * draws);
+  for (let d = 0; d < draws; d++) {
+    for (let i = 0; i < packs; i++) weights[d * packs + random.integer(packs)]++;
+  }
+  return weights;
+}
+
+/**
+ * Pointwise 95 % band of the density in bins, from drawing packs of whole tracks with replacement.
+ *
+ * @param counts packs rows of bins: samples of a pack in a bin.
+ * @param weights multiplicities of `bootstrapWeights` for as many packs.
+ * @returns null where fewer than 2 packs hold samples.
+ */
+export function bootstrapBand(
+  counts: Float64Array,
+  packs: number,
+  widths: readonly number[],
+  weights: Uint16Array,
+): { low: number[]; high: number[] } | null {
+  const bins = widths.length;
+  const filled: number[] = [];
+  const totals = new Float64Array(packs);
+  for (let p = 0; p < packs; p++) {
+    for (let b = 0; b < bins; b++) totals[p] += counts[p * bins + b];
+    if (totals[p] > 0) filled.push(p);
+  }
+  if (filled.length < 2) return null;
+  const draws = weights.length / packs;
+  const densities = new Float64Array(bins * draws);
+  const sum = new Float64Array(bins);
+  let kept = 0;
+  for (let d = 0; d < draws; d++) {
+    sum.fill(0);
+    let total = 0;
+    for (const p of filled) {
+      const weight = weights[d * packs + p];
+      if (weight === 0) continue;
+      total += weight * totals[p];
+      const row = p * bins;
+      for (let b = 0; b < bins; b++) sum[b] += weight * counts[row + b];
+    }
+    if (total === 0) continue;
+    for (let b = 0; b < bins; b++) densities[b * draws + kept] = sum[b] / (total * widths[b]);
+    kept++;
+  }
+  const samples = totals.reduce((a, b) => a + b, 0);
+  const low: number[] = [];
+  const high: number[] = [];
+  for (let b = 0; b < bins; b++) {
+    const sorted = densities.subarray(b * draws, b * draws + kept).sort();
+    low.push(sortedQuantile(sorted, 0.025));
+    const empty = sorted[kept - 1] === 0;
+    high.push(empty ? RULE_OF_THREE / (samples * widths[b]) : sortedQuantile(sorted, 0.975));
+  }
+  return { low, high };
+}
