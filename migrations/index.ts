@@ -1,5 +1,6 @@
 import type { QueryInterface } from 'sequelize';
 import * as createTables from './20261201120000-create-tables';
+import * as indexPointsByTrack from './20261201121000-index-points-by-track';
 
 export interface Migration {
   /** File name without its ending: the same for sources and bundles. */
@@ -9,4 +10,7 @@ export interface Migration {
 }
 
 /** Every migration, oldest first. A migration that has shipped is never edited. */
-export const migrations: Migration[] = [{ name: '20261201120000-create-tables', ...createTables }];
+export const migrations: Migration[] = [
+  { name: '20261201120000-create-tables', ...createTables },
+  { name: '20261201121000-index-points-by-track', ...indexPointsByTrack },
+];

@@ -1,0 +1,97 @@
+import type { ImageFacts } from '@/lib/analysis-facts';
+import type { StackReport, StackSource } from '@/stacks/stack-report';
+import type { FlowMeasures, ImageSize } from '@/tracking/flow-measures';
+import type { Conditions, Recipe, RecipeRequest, Spots, Tracks } from '@/tracking/types';
+
+// What is computed in child processes: plain data in, plain data out, no database, no network.
+
+export interface InspectInput {
+  source: StackSource;
+  /** Folder that receives the frame index and the previews. */
+  outDir: string;
+  usePages?: number;
+  channel?: number | 'mean';
+  /** What the sender made of the bytes, per file of the source; null where the sender did not say. */
+  expectedSha256: (string | null)[];
+  /** False where nobody will look at pictures. */
+  previews: boolean;
+}
+
+export interface MeasureImageInput {
+  stackDir: string;
+  request: RecipeRequest;
+  pixelSizeM: number;
+}
+export interface MeasureImageOutput {
+  /** The image model as bytes, see `encode-image-model.ts`. */
+  model: Uint8Array;
+  facts: ImageFacts;
+  recipe: Recipe;
+}
+
+export interface DetectChunkInput {
+  stackDir: string;
+  model: Uint8Array;
+  recipe: Recipe;
+  firstFrame: number;
+  frames: number;
+}
+export interface DetectChunkOutput {
+  /** Encoded by tracking/spots. */
+  spots: Uint8Array;
+  spotCount: number;
+  spotsPerFrame: number[];
+  /** Time spent on reading frames, ms, of all the time spent. */
+  readingMs: number;
+  tookMs: number;
+}
+
+export interface LinkTracksInput {
+  /** Spots of all chunks, in order. */
+  chunks: Uint8Array[];
+  image: ImageSize;
+  recipe: Recipe;
+}
+
+export interface MeasureFlowInput {
+  tracks: Tracks;
+  image: ImageSize;
+  conditions: Conditions;
+  recipe: Recipe;
+}
+
+export interface TryRecipeInput {
+  stackDir: string;
+  /** At most 8, any order. */
+  frames: number[];
+  request: RecipeRequest;
+  conditions: Pick<Conditions, 'pixelSize_m' | 'frameInterval_s'>;
+}
+export interface TryRecipeOutput {
+  recipe: Recipe;
+  facts: ImageFacts;
+  frames: { frame: number; noiseE: number; spots: Spots }[];
+  /** Tracks over runs of consecutive frames among those chosen. */
+  tracks: Tracks;
+}
+
+export interface Tasks {
+  inspectStack: { input: InspectInput; output: StackReport };
+  measureImage: { input: MeasureImageInput; output: MeasureImageOutput };
+  detectChunk: { input: DetectChunkInput; output: DetectChunkOutput };
+  linkTracks: { input: LinkTracksInput; output: Tracks };
+  measureFlow: { input: MeasureFlowInput; output: FlowMeasures };
+  tryRecipe: { input: TryRecipeInput; output: TryRecipeOutput };
+}
+export type TaskName = keyof Tasks;
+export type TaskInput<K extends TaskName> = Tasks[K]['input'];
+export type TaskOutput<K extends TaskName> = Tasks[K]['output'];
+
+/** From the pool to a child. */
+export type ToChild = { [K in TaskName]: { id: number; task: K; input: TaskInput<K> } }[TaskName];
+
+/** From a child to the pool. */
+export type FromChild =
+  | { id: number; kind: 'progress'; share: number }
+  | { id: number; kind: 'done'; output: TaskOutput<TaskName> }
+  | { id: number; kind: 'failed'; error: { name: string; message: string; stack?: string; field?: string } };
