@@ -11,7 +11,9 @@ export interface Channel {
 }
 
 /** What a run says about itself; anything may still be missing while a form is filled in. */
-export interface RunConditions extends Partial<Conditions> {
+export interface RunConditions extends Omit<Conditions, 'pixelSize_m' | 'frameInterval_s'> {
+  pixelSize_m?: number | null;
+  frameInterval_s?: number | null;
   drive?: Drive | null;
   pressure_Pa?: number | null;
   heatLeak_W?: number | null;

@@ -1,0 +1,190 @@
+'use client';
+
+import { useMemo, useState, type FormEvent } from 'react';
+import { Button } from '@/components/ui/button';
+import { Checkbox } from '@/components/ui/choice';
+import { Field, TextArea } from '@/components/ui/field';
+import { useNotice } from '@/components/ui/notice';
+import { ErrorState } from '@/components/ui/page-states';
+import { Sheet } from '@/components/ui/sheet';
+import type { FieldError } from '@/lib/errors';
+import { fieldName } from '@/lib/run-form/fields';
+import { readRunForm, runForm, withUnit, type RunForm as Typed } from '@/lib/run-form/run-form';
+import type { ConditionName, RunConditionsInput } from '@/lib/schemas/conditions';
+import { runCreateSchema, type RunCreate } from '@/lib/schemas/run';
+import { suspiciousConditions } from '@/lib/suspicious-conditions';
+import { splitTags } from '@/lib/tags';
+import { deriveRun } from '@/tracking/flow/derive-run';
+import type { ReactNode } from 'react';
+import { ConditionsFields } from './conditions-fields';
+import { DerivedPanel } from './derived-panel';
+import { RunNotes } from './run-notes';
+
+/** What saving a run came to. */
+export type SaveRunResult =
+  { ok: true; revision: number; href?: string } | { ok: false; detail: string; errors: FieldError[] };
+
+interface RunFormProps {
+  /** What stands above the form: title and tabs. */
+  head: ReactNode;
+  name: string;
+  notes: string;
+  tags: readonly string[];
+  conditions: RunConditionsInput;
+  revision: number | null;
+  save: (run: RunCreate, revision: number | null) => Promise<SaveRunResult>;
+  /** Called with the place to go once a new run exists. */
+  submitLabel: string;
+  /** Why this person can't save; the fields are then shown as they are. */
+  readOnlyReason?: string | null;
+}
+
+/** Conditions of a run with their units, and what follows from them, beside each other. */
+export function RunForm(props: RunFormProps) {
+  const notify = useNotice();
+  const [form, setForm] = useState<Typed>(() => runForm(props.conditions));
+  const [name, setName] = useState(props.name);
+  const [notes, setNotes] = useState(props.notes);
+  const [tags, setTags] = useState(props.tags.join(', '));
+  const [revision, setRevision] = useState(props.revision);
+  const [left, setLeft] = useState<ReadonlySet<string>>(new Set());
+  const [confirmed, setConfirmed] = useState<readonly string[]>([]);
+  const [fromServer, setFromServer] = useState<{ detail: string; errors: FieldError[] } | null>(null);
+  const [busy, setBusy] = useState(false);
+  const readOnly = Boolean(props.readOnlyReason);
+
+  const { conditions, errors } = useMemo(() => readRunForm(form, props.conditions), [form, props.conditions]);
+  const derived = useMemo(() => deriveRun(conditions), [conditions]);
+  const slips = useMemo(() => suspiciousConditions(conditions), [conditions]);
+
+  const leave = (path: string) => setLeft((old) => new Set(old).add(path));
+  const errorOf = (path: string) =>
+    (left.has(path) && errors.find((error) => error.path === path)?.message) ||
+    fromServer?.errors.find((error) => error.path === path)?.message ||
+    (left.has(path) && slips.find((slip) => slip.path === path && !confirmed.includes(path))?.message) ||
+    null;
+  const warningOf = (path: string) => {
+    const warning = derived.warnings.find(({ field, code }) => field === path && code !== 'GAMMA_UNVERIFIED');
+    return warning && form.text[path as ConditionName] ? 'See the note.' : null;
+  };
+  const change = (part: Partial<Typed>) => {
+    setFromServer(null);
+    setForm((old) => ({ ...old, ...part }));
+  };
+
+  async function submit(event: FormEvent) {
+    event.preventDefault();
+    setLeft(new Set([...errors, ...slips].map(({ path }) => path).concat('name')));
+    const run: RunCreate = {
+      ...conditions,
+      name,
+      notes: notes.trim() || null,
+      tags: splitTags(tags),
+      ...(confirmed.length > 0 ? { confirm: [...confirmed] } : {}),
+    };
+    const checked = runCreateSchema.safeParse(run);
+    if (errors.length > 0 || suspiciousConditions(conditions, confirmed).length > 0) return;
+    if (!checked.success) {
+      const found = checked.error.issues.map((issue) => ({
+        path: issue.path.join('.'),
+        message: issue.message,
+      }));
+      setFromServer({ detail: found[0].message, errors: found });
+      return;
+    }
+    setBusy(true);
+    setFromServer(null);
+    try {
+      const result = await props.save(checked.data, revision);
+      if (!result.ok) {
+        setFromServer(result);
+        return;
+      }
+      if (result.href) {
+        window.location.assign(result.href);
+        return;
+      }
+      setRevision(result.revision);
+      notify('Conditions saved.');
+    } catch {
+      setFromServer({ detail: 'The link to the server was lost. Nothing was saved; try again.', errors: [] });
+    } finally {
+      setBusy(false);
+    }
+  }
+
+  const openSlips = slips.filter(({ path }) => left.has(path) || confirmed.includes(path));
+  return (
+    <Sheet margin={<RunNotes derived={derived} />} marginLabel="Warnings and cautions">
+      {props.head}
+      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-9 gap-y-6 pt-5 desk:grid-cols-[minmax(0,1fr)_340px] wide:grid-cols-[minmax(0,1fr)_428px]">
+        <form onSubmit={submit} noValidate aria-label="Conditions">
+          <div className="grid grid-cols-1 gap-x-[14px] gap-y-3 pb-[18px] hand:grid-cols-2">
+            <Field
+              label="Name of the run"
+              value={name}
+              onChange={(event) => setName(event.target.value)}
+              error={fromServer?.errors.find(({ path }) => path === 'name')?.message}
+              disabled={readOnly}
+            />
+            <Field
+              label="Tags"
+              help="parted by commas"
+              value={tags}
+              onChange={(event) => setTags(event.target.value)}
+              error={fromServer?.errors.find(({ path }) => path.startsWith('tags'))?.message}
+              disabled={readOnly}
+            />
+          </div>
+          <ConditionsFields
+            form={form}
+            change={change}
+            onText={(field, text) => change({ text: { ...form.text, [field]: text } })}
+            onUnit={(field, unit) => setForm((old) => withUnit(old, field, unit))}
+            onLeave={leave}
+            errorOf={errorOf}
+            warningOf={warningOf}
+            disabled={readOnly}
+          />
+          <TextArea
+            label="Notes"
+            value={notes}
+            onChange={(event) => setNotes(event.target.value)}
+            error={fromServer?.errors.find(({ path }) => path === 'notes')?.message}
+            disabled={readOnly}
+          />
+          {openSlips.map(({ path }) => (
+            <Checkbox
+              key={path}
+              className="pt-3"
+              label={`${fieldName(path as ConditionName)} is meant as typed.`}
+              checked={confirmed.includes(path)}
+              onChange={(event) =>
+                setConfirmed((old) =>
+                  event.target.checked ? [...old, path] : old.filter((other) => other !== path),
+                )
+              }
+            />
+          ))}
+          {fromServer ? (
+            <div className="pt-3">
+              <ErrorState live what={fromServer.detail} />
+            </div>
+          ) : null}
+          {props.readOnlyReason ? (
+            <p className="pt-4 text-note text-ink-3">{props.readOnlyReason}</p>
+          ) : (
+            <div className="pt-4">
+              <Button type="submit" kind="main" busy={busy}>
+                {props.submitLabel}
+              </Button>
+            </div>
+          )}
+        </form>
+        <div className="max-desk:order-first">
+          <DerivedPanel derived={derived} pixelSizeM={conditions.pixelSize_m ?? null} />
+        </div>
+      </div>
+    </Sheet>
+  );
+}
