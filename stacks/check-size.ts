@@ -5,7 +5,11 @@ import { StackRefusal } from './refusal';
  * @throws StackRefusal BAD_DIMENSIONS for a frame without area, IMAGE_TOO_LARGE beyond 64 megapixels
  *   or for an absurd number of samples.
  */
-export function assertFrameSize(width: number | undefined, height: number | undefined, samplesPerPixel: number): void {
+export function assertFrameSize(
+  width: number | undefined,
+  height: number | undefined,
+  samplesPerPixel: number,
+): void {
   for (const [name, value] of [
     ['Width', width],
     ['Height', height],

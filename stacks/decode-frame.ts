@@ -98,16 +98,15 @@ function placePlanes(
  * @param out width * height entries, row by row
  * @throws ShortFrameError when data is missing, and the decoder's error when it is damaged.
  */
-export async function decodeFrame(
+export function decodeFrame(
   parts: Uint8Array[],
   layout: FrameLayout,
   width: number,
   height: number,
   out: Float32Array,
-): Promise<void> {
+): void {
   if (layout.container === 'png') {
-    const samples = await decodePng(joined(parts), layout, width, height);
-    pickChannel(samples, layout, out);
+    pickChannel(decodePng(joined(parts), width, height), layout, out);
     return;
   }
   const merged = layout.compression === COMPRESSION.none && !layout.tiled && layout.planes === 1;

@@ -3,6 +3,7 @@ import { decodeFrame } from './decode-frame';
 import { type IndexReader } from './index-reader';
 import { maskNonFinite } from './mask-non-finite';
 import { readSegments } from './segments';
+import { type ArchiveEntryPlace } from './stack-index';
 import { expandEntry } from './zip/expand-entry';
 
 /** Reads frames by their place; knows nothing of files' names or formats. */
@@ -17,13 +18,22 @@ export interface FrameReader {
  */
 export function frameReader(sources: readonly ByteSource[], index: IndexReader): FrameReader {
   const { width, height, layouts } = index;
+  // Frames of one entry follow each other, so the entry expanded last is mostly the next one too.
+  let expanded: { source: number; offset: number; bytes: ByteSource } | null = null;
+  const entryBytes = async (number: number, entry: ArchiveEntryPlace) => {
+    if (expanded?.source !== number || expanded.offset !== entry.offset) {
+      expanded = null;
+      const bytes = memorySource(await expandEntry(sources[number]!, entry));
+      expanded = { source: number, offset: entry.offset, bytes };
+    }
+    return expanded.bytes;
+  };
   return {
     async read(frame, out) {
       const place = await index.locate(frame);
-      const source = sources[place.source]!;
-      const bytes = place.entry ? memorySource(await expandEntry(source, place.entry)) : source;
+      const bytes = place.entry ? await entryBytes(place.source, place.entry) : sources[place.source]!;
       const parts = await readSegments(bytes, place.segments);
-      await decodeFrame(parts, layouts[place.layout]!, width, height, out);
+      decodeFrame(parts, layouts[place.layout]!, width, height, out);
       return index.sampleKind === 'float' ? maskNonFinite(out, width, height) : 0;
     },
   };

@@ -34,7 +34,9 @@ export interface StackReader {
 export async function openStack(dir: string): Promise<StackReader> {
   const indexSource = await fileSource(join(dir, INDEX_FILE));
   const index = await openIndex(indexSource);
-  const sources = index.sources.map(({ path, sizeBytes }) => lazyFileSource(sourcePath(dir, path), sizeBytes));
+  const sources = index.sources.map(({ path, sizeBytes }) =>
+    lazyFileSource(sourcePath(dir, path), sizeBytes),
+  );
   const reader = frameReader(sources, index);
   const { width, height, frames, bitDepth, sampleKind, maxCount } = index;
   return {
@@ -49,7 +51,9 @@ export async function openStack(dir: string): Promise<StackReader> {
         throw new RangeError(`The stack has frames 0 to ${frames - 1}. Asked for ${frame}.`);
       }
       if (into.width !== width || into.height !== height || into.counts.length !== width * height) {
-        throw new RangeError(`Frames are ${width} x ${height}. Received room for ${into.width} x ${into.height}.`);
+        throw new RangeError(
+          `Frames are ${width} x ${height}. Received room for ${into.width} x ${into.height}.`,
+        );
       }
       await reader.read(frame, into.counts);
       return into;

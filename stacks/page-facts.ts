@@ -52,7 +52,8 @@ export class PageComparison {
       );
     }
     const [depth, firstDepth] = [facts, first].map(
-      ({ bits, sampleKind, channels }) => depthName(bits, sampleKind) + (channels > 1 ? ` in ${channels} channels` : ''),
+      ({ bits, sampleKind, channels }) =>
+        depthName(bits, sampleKind) + (channels > 1 ? ` in ${channels} channels` : ''),
     );
     if (depth !== firstDepth) {
       throw new StackRefusal('MIXED_DEPTH', `${name} is ${depth}, ${pagesAre(page - 1)} ${firstDepth}.`);

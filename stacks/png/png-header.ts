@@ -5,6 +5,7 @@ export interface PngHeader {
   bits: number;
   /** 0 grey, 2 RGB, 3 palette, 4 grey + alpha, 6 RGB + alpha. */
   colourType: number;
+  interlaced: boolean;
 }
 
 /** Bytes of signature and first chunk, checksum included. */
@@ -31,11 +32,18 @@ export function readPngHeader(bytes: Uint8Array): PngHeader | null {
     height: view.getUint32(20),
     bits: bytes[24]!,
     colourType: bytes[25]!,
+    interlaced: bytes[28] === 1,
   };
-  return isHeader && BIT_DEPTHS[header.colourType]?.includes(header.bits) ? header : null;
+  const known = bytes[26] === 0 && bytes[27] === 0 && bytes[28]! <= 1;
+  return isHeader && known && BIT_DEPTHS[header.colourType]?.includes(header.bits) ? header : null;
 }
 
-/** Channels of a pixel once decoded: palettes become three colours. */
+/** Samples of a pixel as stored, alpha included. */
+export function storedSamples({ colourType }: PngHeader): number {
+  return { 0: 1, 2: 3, 3: 1, 4: 2, 6: 4 }[colourType] ?? 1;
+}
+
+/** Colour channels of a pixel: palettes have three, alpha is none. */
 export function pngChannels({ colourType }: PngHeader): number {
-  return { 0: 1, 2: 3, 3: 3, 4: 2, 6: 4 }[colourType] ?? 1;
+  return colourType === 0 || colourType === 4 ? 1 : 3;
 }

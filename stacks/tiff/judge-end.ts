@@ -42,20 +42,22 @@ function readablePages(intact: number): string {
   return `Pages 1-${intact} are readable: use them or upload again.`;
 }
 
+/** The refusal of a file that ends after `intact` pages, when at least `known` pages were there. */
+export function truncatedStack(intact: number, known: number): StackRefusal {
+  const cut = intact + 1;
+  return new StackRefusal(
+    'STACK_TRUNCATED',
+    `The file ends inside page ${cut} of at least ${Math.max(cut, known)}. ${readablePages(intact)}`,
+    intact > 0 ? { usePages: intact } : {},
+  );
+}
+
 /** The refusal for a page list or page that leads outside the file. */
 export function judgeBrokenEnd(end: BrokenEnd): StackRefusal {
-  const offer = end.intactPages > 0 ? { usePages: end.intactPages } : {};
-  if (looksCut(end)) {
-    const cut = end.intactPages + 1;
-    return new StackRefusal(
-      'STACK_TRUNCATED',
-      `The file ends inside page ${cut} of at least ${Math.max(cut, end.knownPages)}. ${readablePages(end.intactPages)}`,
-      offer,
-    );
-  }
+  if (looksCut(end)) return truncatedStack(end.intactPages, end.knownPages);
   return new StackRefusal(
     'TIFF_BAD_OFFSET',
     `Page ${end.pointingPage} points to byte ${end.pointsTo}, but the file has ${end.sizeBytes} bytes.`,
-    offer,
+    end.intactPages > 0 ? { usePages: end.intactPages } : {},
   );
 }

@@ -17,11 +17,19 @@ function shortPage(page: number, needed: number, held: number): StackRefusal {
 }
 
 /** Strips or tiles of the planes that are read: where each begins, and how many bytes it says it has. */
-async function chunkTable(file: TiffFile, directory: TiffDirectory, { layout, storedPlanes }: TiffPage, perPlane: number) {
+async function chunkTable(
+  file: TiffFile,
+  directory: TiffDirectory,
+  { layout, storedPlanes }: TiffPage,
+  perPlane: number,
+) {
   const { fields } = directory;
   const all = perPlane * storedPlanes;
   const offsets = await file.readNumbers(fields.get(layout.tiled ? TAG.tileOffsets : TAG.stripOffsets), all);
-  const counts = await file.readNumbers(fields.get(layout.tiled ? TAG.tileByteCounts : TAG.stripByteCounts), all);
+  const counts = await file.readNumbers(
+    fields.get(layout.tiled ? TAG.tileByteCounts : TAG.stripByteCounts),
+    all,
+  );
   if (storedPlanes === 1 || layout.channel === 'mean') return { offsets, counts };
   const from = Number(layout.channel) * perPlane;
   return { offsets: offsets.slice(from, from + perPlane), counts: counts.slice(from, from + perPlane) };

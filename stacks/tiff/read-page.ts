@@ -56,7 +56,8 @@ function assertCoding({ compression, photometric, predictor, fillOrder }: PageNu
       `Pixels of kind ${photometric}${name ? ` (${name})` : ''} are not supported. Save as grey levels.`,
     );
   }
-  if (fillOrder !== 1) throw new StackRefusal('SAMPLE_FORMAT', 'Samples with reversed bits are not supported.');
+  if (fillOrder !== 1)
+    throw new StackRefusal('SAMPLE_FORMAT', 'Samples with reversed bits are not supported.');
   const known = predictor === 1 || (predictor === 2 && bits % 8 === 0) || (predictor === 3 && bits === 32);
   if (!known) {
     throw new StackRefusal(
@@ -68,7 +69,9 @@ function assertCoding({ compression, photometric, predictor, fillOrder }: PageNu
 
 /** Only the dictionary coders use a predictor; elsewhere the tag has no meaning. */
 function usedPredictor({ compression, predictor }: PageNumbers): number {
-  const uses = ([COMPRESSION.lzw, COMPRESSION.deflate, COMPRESSION.deflateOld] as number[]).includes(compression);
+  const uses = ([COMPRESSION.lzw, COMPRESSION.deflate, COMPRESSION.deflateOld] as number[]).includes(
+    compression,
+  );
   return uses ? predictor : 1;
 }
 
@@ -76,7 +79,10 @@ async function sampleBits(file: TiffFile, { fields }: TiffDirectory): Promise<nu
   const all = await file.readNumbers(fields.get(TAG.bitsPerSample), 16);
   const different = all.find((bits) => bits !== all[0]);
   if (different !== undefined) {
-    throw new StackRefusal('SAMPLE_FORMAT', `${all[0]}-bit and ${different}-bit samples in one pixel are not supported.`);
+    throw new StackRefusal(
+      'SAMPLE_FORMAT',
+      `${all[0]}-bit and ${different}-bit samples in one pixel are not supported.`,
+    );
   }
   return all[0] ?? 1;
 }
@@ -94,7 +100,11 @@ function chunkSize(n: PageNumbers, width: number, height: number) {
  * What a page says about its pixels.
  * @throws StackRefusal when such pixels aren't read; OutOfRangeError when its fields are cut.
  */
-export async function readPage(file: TiffFile, directory: TiffDirectory, choice: ChannelChoice): Promise<TiffPage> {
+export async function readPage(
+  file: TiffFile,
+  directory: TiffDirectory,
+  choice: ChannelChoice,
+): Promise<TiffPage> {
   const n = await pageNumbers(file, directory);
   assertFrameSize(n.width, n.height, n.samplesPerPixel);
   const [width, height] = [n.width!, n.height!];

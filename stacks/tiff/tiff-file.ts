@@ -57,7 +57,9 @@ export class TiffFile {
   async readDirectory(offset: number): Promise<TiffDirectory> {
     const [countBytes, fieldBytes, pointerBytes] = this.big ? [8, 20, 8] : [2, 12, 4];
     const head = await this.window.view(offset, countBytes);
-    const count = this.big ? Number(head.getBigUint64(0, this.littleEndian)) : head.getUint16(0, this.littleEndian);
+    const count = this.big
+      ? Number(head.getBigUint64(0, this.littleEndian))
+      : head.getUint16(0, this.littleEndian);
     if (count > FIELDS_MAX) throw new DirectoryError(`A page with ${count} fields.`);
     const body = await this.window.view(offset + countBytes, count * fieldBytes + pointerBytes);
     const fields = new Map<number, TiffField>();
@@ -94,7 +96,9 @@ export class TiffFile {
   async readText(field: TiffField): Promise<string> {
     const view = await this.window.view(field.at, field.count);
     const bytes = new Uint8Array(view.buffer, view.byteOffset, view.byteLength);
-    return Buffer.from(bytes).toString('utf8').replace(/\0[\s\S]*$/, '');
+    return Buffer.from(bytes)
+      .toString('utf8')
+      .replace(/\0[\s\S]*$/, '');
   }
 
   private parseField(body: DataView, at: number, fieldOffset: number): TiffField | null {
@@ -111,6 +115,8 @@ export class TiffFile {
   }
 
   private pointer(view: DataView, at: number): number {
-    return this.big ? Number(view.getBigUint64(at, this.littleEndian)) : view.getUint32(at, this.littleEndian);
+    return this.big
+      ? Number(view.getBigUint64(at, this.littleEndian))
+      : view.getUint32(at, this.littleEndian);
   }
 }

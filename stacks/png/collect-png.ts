@@ -1,0 +1,40 @@
+import { type ByteSource } from '../byte-source';
+import { assertFrameSize } from '../check-size';
+import { chosenChannel } from '../page-facts';
+import { plainLayout } from '../frame-layout';
+import { StackRefusal } from '../refusal';
+import { shownName } from '../sentence';
+import { type PagePlace, type StackCollector } from '../stack-collector';
+import { PNG_HEADER_BYTES, pngChannels, readPngHeader } from './png-header';
+
+/** The refusal of a PNG frame that can't be decoded. */
+export function corruptPng(name: string): StackRefusal {
+  return new StackRefusal('PNG_CORRUPT', `${shownName(name)} is damaged.`);
+}
+
+/**
+ * Adds one PNG file to the stack by its header; its pixels are checked with all others later.
+ * @param name of the file, for the sentence
+ */
+export async function collectPng(
+  source: ByteSource,
+  collector: StackCollector,
+  place: PagePlace,
+  name: string,
+): Promise<void> {
+  const header = readPngHeader(await source.read(0, Math.min(PNG_HEADER_BYTES, source.sizeBytes)));
+  if (!header) throw corruptPng(name);
+  const { width, height, bits, colourType } = header;
+  const channels = pngChannels(header);
+  assertFrameSize(width, height, channels);
+  if (bits < 8) throw new StackRefusal('SAMPLE_FORMAT', `${bits}-bit samples are not supported.`);
+  const layout = {
+    ...plainLayout(width, height, { bits, sampleKind: 'uint', littleEndian: false }),
+    container: 'png' as const,
+    samplesPerPixel: channels,
+    channel: chosenChannel(channels, collector.channel),
+  };
+  const facts = { width, height, bits, sampleKind: 'uint' as const, channels };
+  const whole = { offsets: Float64Array.of(0), lengths: Float64Array.of(source.sizeBytes) };
+  collector.add({ facts: { ...facts, bits: colourType === 3 ? 8 : bits }, layout, segments: whole }, place);
+}
