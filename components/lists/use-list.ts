@@ -1,0 +1,53 @@
+'use client';
+
+import { keepPreviousData, useQuery } from '@tanstack/react-query';
+import { usePathname, useRouter, useSearchParams } from 'next/navigation';
+import { api } from '@/components/data/api-client';
+import {
+  apiQuery,
+  filteredBy,
+  listHref,
+  nextPage,
+  pageBefore,
+  readListState,
+  sortDirection,
+  sortedBy,
+  type ListShape,
+} from '@/lib/lists/list-state';
+import type { ListView } from '@/lib/views/common';
+
+/** Rows of a page of any list. */
+const PAGE_ROWS = 25;
+
+/**
+ * A list of the API whose order, filters and page stand in the address.
+ * @param source path of the list in the API.
+ * @param refreshMs asks again this often; for lists of work that goes on.
+ */
+export function useList<T>(source: string, shape: ListShape, refreshMs?: number) {
+  const path = usePathname();
+  const params = useSearchParams();
+  const router = useRouter();
+  const state = readListState(new URLSearchParams(params), shape);
+  const address = `${source}?${apiQuery(state, PAGE_ROWS)}`;
+  const query = useQuery({
+    queryKey: ['list', address],
+    queryFn: ({ signal }) => api<ListView<T>>(address, { signal }),
+    placeholderData: keepPreviousData,
+    refetchInterval: refreshMs,
+  });
+  const before = pageBefore(state);
+  const next = query.data?.nextCursor;
+  return {
+    query,
+    state,
+    sort: (field: string) => ({
+      href: listHref(path, sortedBy(state, field), shape),
+      current: sortDirection(state, field),
+    }),
+    filter: (name: string, value: string) =>
+      router.replace(listHref(path, filteredBy(state, name, value), shape), { scroll: false }),
+    backHref: before && listHref(path, before, shape),
+    nextHref: next ? listHref(path, nextPage(state, next), shape) : null,
+  };
+}
