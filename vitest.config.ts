@@ -1,12 +1,36 @@
 import { defineConfig } from 'vitest/config';
 
+const needsServer = ['tests/api/**/*.test.ts', 'tests/e2e/**/*.{test,spec}.ts'];
+
 export default defineConfig({
   resolve: { alias: { '@': import.meta.dirname } },
   test: {
-    include: ['tests/**/*.test.ts', 'tests/**/*.test.tsx'],
     testTimeout: 30_000,
     hookTimeout: 120_000,
     pool: 'forks',
-    maxWorkers: 2,
+    projects: [
+      {
+        extends: true,
+        test: {
+          name: 'parts',
+          include: ['tests/**/*.test.ts', 'tests/**/*.test.tsx'],
+          exclude: needsServer,
+          maxWorkers: 2,
+          sequence: { groupOrder: 0 },
+        },
+      },
+      {
+        extends: true,
+        test: {
+          // All of these talk to one running product, so they take turns, and only after the others.
+          name: 'server',
+          include: needsServer,
+          globalSetup: ['tests/helpers/start-shared-server.ts'],
+          fileParallelism: false,
+          testTimeout: 120_000,
+          sequence: { groupOrder: 1 },
+        },
+      },
+    ],
   },
 });

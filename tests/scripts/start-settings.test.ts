@@ -1,0 +1,36 @@
+import { describe, expect, it } from 'vitest';
+import { readStartSettings } from '@/scripts/platform/start-settings.mjs';
+
+const env = (values: Record<string, string>) => values as unknown as NodeJS.ProcessEnv;
+
+describe('what the environment asks of a start', () => {
+  it('has the documented values when nothing is set', () => {
+    const settings = readStartSettings(env({}));
+    expect(settings).toMatchObject({ port: 3000, url: 'http://127.0.0.1:3000', withDemo: true });
+    expect(settings.databaseUrl).toBeNull();
+    expect(settings.data).toBe(`${process.cwd()}/.beadline`);
+    expect(settings.workers).toBeGreaterThanOrEqual(1);
+  });
+
+  it('takes a relative data folder from where the command was typed', () => {
+    expect(readStartSettings(env({ INIT_CWD: '/data/lab', BEADLINE_DATA: 'here' })).data).toBe(
+      '/data/lab/here',
+    );
+  });
+
+  it('leaves out the demo laboratory only for 0', () => {
+    expect(readStartSettings(env({ BEADLINE_DEMO: '0' })).withDemo).toBe(false);
+    expect(readStartSettings(env({ BEADLINE_DEMO: '1' })).withDemo).toBe(true);
+  });
+
+  it.each([
+    ['PORT', '70000'],
+    ['PORT', '0'],
+    ['PORT', '3000x'],
+    ['BEADLINE_WORKERS', '-1'],
+    ['BEADLINE_WORKERS', '1.5'],
+    ['DATABASE_URL', 'mysql://127.0.0.1/x'],
+  ])('names the variable when %s is %s', (name, value) => {
+    expect(() => readStartSettings(env({ [name]: value }))).toThrow(name);
+  });
+});
