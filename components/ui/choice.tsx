@@ -1,4 +1,4 @@
-import { useId, type InputHTMLAttributes, type ReactNode, type SelectHTMLAttributes } from 'react';
+import { useId, type ComponentPropsWithRef, type ReactNode } from 'react';
 import { boxClasses, describedBy, FieldFrame, messageOf, type FieldWords } from './field-frame';
 
 export interface Option<Value extends string = string> {
@@ -17,7 +17,7 @@ export function Chevron({ className = '' }: { className?: string }) {
 }
 
 type SelectFieldProps = FieldWords &
-  Omit<SelectHTMLAttributes<HTMLSelectElement>, 'className' | 'children'> & {
+  Omit<ComponentPropsWithRef<'select'>, 'className' | 'children'> & {
     options: readonly Option[];
     className?: string;
   };
@@ -110,7 +110,7 @@ export function Segment<Value extends string>({
 }
 
 type CheckboxProps = Omit<FieldWords, 'hideLabel'> &
-  Omit<InputHTMLAttributes<HTMLInputElement>, 'type' | 'className'> & { className?: string };
+  Omit<ComponentPropsWithRef<'input'>, 'type' | 'className'> & { className?: string };
 
 /** A yes or no; ink when yes. */
 export function Checkbox({ label, help, error, warning, id, className = '', ...input }: CheckboxProps) {

@@ -1,9 +1,9 @@
-import { useId, type InputHTMLAttributes, type ReactNode, type TextareaHTMLAttributes } from 'react';
+import { useId, type ComponentPropsWithRef, type ReactNode } from 'react';
 import { boxClasses, describedBy, FieldFrame, type FieldWords } from './field-frame';
 import { Unit } from './quantity';
 
 type FieldProps = FieldWords &
-  Omit<InputHTMLAttributes<HTMLInputElement>, 'className'> & {
+  Omit<ComponentPropsWithRef<'input'>, 'className'> & {
     /** Printed inside the box at its right; read with the label. `^` raises: `mW/cm^2`. */
     unit?: string;
     /** Columns and the like; goes on the outer element. */
@@ -52,7 +52,7 @@ export function Field({
 }
 
 type TextAreaProps = FieldWords &
-  Omit<TextareaHTMLAttributes<HTMLTextAreaElement>, 'className'> & { className?: string };
+  Omit<ComponentPropsWithRef<'textarea'>, 'className'> & { className?: string };
 
 /** Text of several lines. */
 export function TextArea({
