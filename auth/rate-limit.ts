@@ -1,30 +1,26 @@
+import { limit } from '@/lib/env';
 import { LabError } from '@/lib/errors';
 import { execute, selectRow } from '@/models/queries/select';
 
-/** Limits of one person, each of them settable as `BEADLINE_LIMIT_<NAME>`. */
 const LIMITS = {
-  REQUESTS: { most: 600, windowS: 60, what: 'changes a minute' },
-  ANALYSES: { most: 200, windowS: 3600, what: 'analyses an hour' },
+  changesPerMinute: { windowS: 60, what: 'changes a minute' },
+  analysesPerHour: { windowS: 3600, what: 'analyses an hour' },
 } as const;
-
-export type LimitName = keyof typeof LIMITS;
-
-export function limitOf(name: string, fallback: number): number {
-  const value = Number(process.env[`BEADLINE_LIMIT_${name}`]);
-  return Number.isFinite(value) && value > 0 ? value : fallback;
-}
 
 /**
  * Counts one request of a person in PostgreSQL, so that all web processes share the count.
  * @throws LabError TOO_MANY with `Retry-After` above the limit.
  */
-export async function countRequest(userId: string, name: LimitName = 'REQUESTS'): Promise<void> {
-  const { most, windowS, what } = LIMITS[name];
-  const limit = limitOf(name, most);
-  const row = await addToWindow(`${name}:${userId}`, windowS);
-  if (row.count <= limit) return;
-  throw new LabError('TOO_MANY', `More than ${limit} ${what}. Wait ${row.leftS} s.`, {
-    headers: { 'Retry-After': String(row.leftS) },
+export async function countRequest(
+  userId: string,
+  name: keyof typeof LIMITS = 'changesPerMinute',
+): Promise<void> {
+  const { windowS, what } = LIMITS[name];
+  const most = limit(name);
+  const { count, leftS } = await addToWindow(`${name}:${userId}`, windowS);
+  if (count <= most) return;
+  throw new LabError('TOO_MANY', `More than ${most} ${what}. Wait ${leftS} s.`, {
+    headers: { 'Retry-After': String(leftS) },
   });
 }
 

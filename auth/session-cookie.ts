@@ -1,4 +1,5 @@
 import { decode, encode } from 'next-auth/jwt';
+import { sessionSecret } from '@/lib/env';
 
 /** A session ends after this long without use, s: all-day annotators pause for meals and meetings. */
 export const SESSION_IDLE_S = 8 * 3600;
@@ -26,16 +27,10 @@ export const LAB_COOKIE = 'beadline-lab';
 export const cookieOptions = () =>
   ({ httpOnly: true, sameSite: 'lax', path: '/', secure: isSecureSite() }) as const;
 
-function secret(): string {
-  const value = process.env.NEXTAUTH_SECRET;
-  if (!value) throw new Error('NEXTAUTH_SECRET is not set: start through `npm start`, or set one.');
-  return value;
-}
-
 /** What a session's cookie says; null when it is forged, idle too long or past its whole life. */
 export async function readSession(cookie: string | undefined, nowS: number): Promise<Session | null> {
   if (!cookie) return null;
-  const payload = await decode({ token: cookie, secret: secret() }).catch(() => null);
+  const payload = await decode({ token: cookie, secret: sessionSecret() }).catch(() => null);
   if (!payload || typeof payload.userId !== 'string' || typeof payload.signedInAt !== 'number') return null;
   if (nowS - payload.signedInAt > SESSION_ABSOLUTE_S) return null;
   return {
@@ -57,7 +52,7 @@ export function writeSession(session: Omit<Session, 'issuedAt'>, nowS: number): 
   const leftS = Math.max(1, signedInAt + SESSION_ABSOLUTE_S - nowS);
   return encode({
     token: { sub: userId, userId, sessionVersion, labId, signedInAt },
-    secret: secret(),
+    secret: sessionSecret(),
     maxAge: Math.min(SESSION_IDLE_S, leftS),
   });
 }
