@@ -1,16 +1,13 @@
 import { SelectField } from '@/components/ui/choice';
 import { Field, FieldGroup } from '@/components/ui/field';
+import { DRIVE_NAMES } from '@/lib/run-form/drive-names';
 import type { RunForm } from '@/lib/run-form/run-form';
 import type { ConditionName } from '@/lib/schemas/conditions';
 import { QuantityField } from './quantity-field';
 
 const DRIVES = [
   { value: '', label: 'not set' },
-  { value: 'counterflow', label: 'thermal counterflow' },
-  { value: 'coflow', label: 'co-flow' },
-  { value: 'towed-grid', label: 'towed grid' },
-  { value: 'oscillating-grid', label: 'oscillating grid' },
-  { value: 'none', label: 'none' },
+  ...Object.entries(DRIVE_NAMES).map(([value, label]) => ({ value, label })),
 ];
 const SHAPES = [
   { value: '', label: 'not set' },
