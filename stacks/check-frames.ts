@@ -13,12 +13,7 @@ import { EntrySizeError } from './zip/expand-entry';
 import { brokenEntry } from './zip/collect-zip';
 
 /** The refusal that a frame's decoder error means. */
-function unreadable(
-  cause: RangeError | Error,
-  frame: number,
-  fileName: string | null,
-  isPng: boolean,
-): StackRefusal {
+function unreadable(cause: RangeError | Error, frame: number, fileName: string | null): StackRefusal {
   const offer = frame > 0 ? { usePages: frame } : {};
   const name = fileName === null ? `Page ${frame + 1}` : `Page ${frame + 1} (${shownName(fileName)})`;
   if (cause instanceof EntrySizeError) return brokenEntry(fileName ?? name, cause);

@@ -110,10 +110,11 @@ export function decodeFrame(
     return;
   }
   const merged = layout.compression === COMPRESSION.none && !layout.tiled && layout.planes === 1;
-  const chunks = expandChunks(merged ? [joined(parts)] : parts, layout, width, height);
+  const plain = merged ? { ...layout, chunkHeight: height } : layout;
+  const chunks = expandChunks(merged ? [joined(parts)] : parts, plain, width, height);
   if (merged && layout.samplesPerPixel === 1) {
     unpackSamples(chunks[0]!, layout, height, width, out);
     pickChannel(out, layout, out);
   } else if (layout.planes > 1) placePlanes(chunks, layout, width, height, out);
-  else placeChunks(chunks, layout, width, height, out);
+  else placeChunks(chunks, plain, width, height, out);
 }
