@@ -1,0 +1,103 @@
+import { matchPoints, nearestNeighbourPx, type TimedPoints } from './assess/point-match';
+import { positionBound } from './cramer-rao';
+import type { Scene, SceneCamera } from './simulate/scene';
+import { sheetLight } from './simulate/sheet-light';
+import { POINT_BRIDGED, type Tracks } from './types';
+
+/** A found point farther than this from the truth is another thing. */
+export const FOUND_WITHIN_PX = 2;
+/** Points without a neighbour within this distance count as isolated: 5 spot sizes. */
+export const ISOLATED_PX = 6;
+
+/** How the points that were found compare with where the tracers are. */
+export interface PointAssessment {
+  truePoints: number;
+  foundShare: number;
+  isolatedPoints: number;
+  isolatedFoundShare: number;
+  points: number;
+  falseShare: number;
+  /** Root mean square of the position error of isolated points per axis, px. */
+  rmsXPx: number;
+  rmsYPx: number;
+  /** The same of the Cramer-Rao bounds of the same points. */
+  boundXPx: number;
+  boundYPx: number;
+  /** Largest of the two ratios of rms error to bound. */
+  rmsOverBound: number;
+  /** Root mean square of error over stated standard error; 1 where errors are honest. */
+  errorOverStated: number;
+}
+
+/** Points of tracks, or single spots, with their stated standard errors. */
+export interface FoundPoints extends TimedPoints {
+  sxPx: ArrayLike<number>;
+  syPx: ArrayLike<number>;
+}
+
+/** Measured points of tracks; bridged ones are interpolated and count for nothing. */
+export function measuredPoints(tracks: Tracks): FoundPoints {
+  const keep = Array.from(tracks.flags.keys()).filter((i) => (tracks.flags[i] & POINT_BRIDGED) === 0);
+  const pick = (from: ArrayLike<number>) => Float64Array.from(keep, (i) => from[i]);
+  const { frame, xPx, yPx, sxPx, syPx } = tracks;
+  return { frame: pick(frame), xPx: pick(xPx), yPx: pick(yPx), sxPx: pick(sxPx), syPx: pick(syPx) };
+}
+
+/** Compares points with the scene that they were found in. */
+export function assessPoints(scene: Scene, camera: SceneCamera, found: FoundPoints): PointAssessment {
+  const partner = matchPoints(scene, found, scene.frames, FOUND_WITHIN_PX);
+  const nearest = nearestNeighbourPx(scene, scene.frames);
+  const light = sheetLight(camera, scene.widthPx, scene.heightPx);
+  const readVariance = camera.readNoiseE * camera.readNoiseE;
+  let matched = 0;
+  let isolated = 0;
+  let isolatedMatched = 0;
+  let errorX = 0;
+  let errorY = 0;
+  let boundX = 0;
+  let boundY = 0;
+  let stated = 0;
+  for (let i = 0; i < partner.length; i++) {
+    const alone = nearest[i] > ISOLATED_PX;
+    if (alone) isolated++;
+    const j = partner[i];
+    if (j < 0) continue;
+    matched++;
+    if (!alone) continue;
+    isolatedMatched++;
+    const x = Math.max(0, Math.min(scene.widthPx - 1, Math.round(scene.xPx[i])));
+    const y = Math.max(0, Math.min(scene.heightPx - 1, Math.round(scene.yPx[i])));
+    const bound = positionBound(
+      scene.brightnessE[i],
+      camera.backgroundE * light[y * scene.widthPx + x],
+      camera.spotSigmaPx,
+      readVariance,
+      scene.xPx[i] - x,
+      scene.yPx[i] - y,
+      { left: -x, right: scene.widthPx - 1 - x, top: -y, bottom: scene.heightPx - 1 - y },
+    );
+    const dx = found.xPx[j] - scene.xPx[i];
+    const dy = found.yPx[j] - scene.yPx[i];
+    errorX += dx * dx;
+    errorY += dy * dy;
+    boundX += bound.sxPx * bound.sxPx;
+    boundY += bound.syPx * bound.syPx;
+    stated += 0.5 * ((dx / found.sxPx[j]) ** 2 + (dy / found.syPx[j]) ** 2);
+  }
+  const points = found.frame.length;
+  const rms = (sum: number) => Math.sqrt(sum / isolatedMatched);
+  return {
+    truePoints: partner.length,
+    foundShare: matched / partner.length,
+    isolatedPoints: isolated,
+    isolatedFoundShare: isolatedMatched / isolated,
+    points,
+    falseShare: (points - matched) / points,
+    rmsXPx: rms(errorX),
+    rmsYPx: rms(errorY),
+    boundXPx: rms(boundX),
+    boundYPx: rms(boundY),
+    rmsOverBound: Math.sqrt(Math.max(errorX / boundX, errorY / boundY)),
+    errorOverStated: rms(stated),
+  };
+}

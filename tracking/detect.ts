@@ -1,0 +1,240 @@
+import { createGroupFitter, type FramePictures } from './detection/group-fitter';
+import { JOINT_SPOTS_MOST } from './detection/joint-fit';
+import { measureLightLevel } from './detection/light-level';
+import { createMatchedFilter, findPeaks, type PeakList } from './detection/matched-filter';
+import { createSpotPainter } from './detection/spot-painter';
+import { SpotTable } from './detection/spot-table';
+import { levelForFalseMaxima } from './detection/threshold';
+import type { SpotSink } from './spots';
+import {
+  SPOT_EDGE,
+  SPOT_ELONGATED,
+  SPOT_OVERLAP,
+  SPOT_SATURATED,
+  type Frame,
+  type ImageModel,
+  type Recipe,
+} from './types';
+
+/** Pixels within this many spot sizes of a spot take part in its fit. */
+const FIT_REACH_SIGMAS = 2.8;
+/** Spots closer than this are fitted together. */
+const TOGETHER_SIGMAS = 5;
+/** Spots closer than this are flagged as overlapping. */
+const OVERLAP_SIGMAS = 3.5;
+/** The filter sees whole pixels only and weighs noise approximately; the fit then decides. */
+const LEVEL_MARGIN = 0.7;
+/** From this much above the level a lone spot needs no second opinion. */
+const LEVEL_SURE = 2.5;
+/** Pixels around a spot in which the second look can find another. */
+const SECOND_LOOK_PIXELS_SIGMAS2 = 40;
+/** How far the background near a spot may differ from the model: a share of it and a floor, electrons. */
+const OFFSET_SHARE = 0.1;
+const OFFSET_LEAST_E = 0.5;
+/** Score of elongation that marks a spot: noise exceeds it once in 10^5. */
+const ELONGATION_FLAGGED = 23;
+
+/** Finds the spots of single frames; what it finds depends on the frame and the model alone. */
+export interface Detector {
+  /** Appends the spots of a frame to the sink, by y, then x. */
+  detect(frame: Frame, frameIndex: number, sink: SpotSink): void;
+}
+
+/**
+ * Spots as a test of hypotheses: the frame in units of its own noise is correlated with the spot's
+ * shape; maxima above the level that noise alone exceeds `falseSpotsPerFrame` times are fitted by
+ * maximum likelihood, neighbours together; in what remains a second look asks whether one more
+ * spot gains enough likelihood. Standard errors come from the Fisher information of the joint fit.
+ *
+ * @throws RangeError when a frame has another size than the model.
+ */
+export function createDetector(model: ImageModel, recipe: Recipe): Detector {
+  const { width, height, badPixels, backgroundE, offsetCounts, saturationCounts } = model;
+  const pixels = width * height;
+  const sigma = recipe.spotSizePx;
+  const readVariance = recipe.readNoise_e * recipe.readNoise_e;
+  const reach = Math.max(2, Math.ceil(FIT_REACH_SIGMAS * sigma));
+  const level = levelForFalseMaxima(recipe.falseSpotsPerFrame, sigma, pixels);
+  const lookTwice = recipe.effort === 'full';
+
+  const filter = createMatchedFilter(width, height, sigma);
+  const painter = createSpotPainter(width, height, sigma, reach);
+  const fitter = createGroupFitter({ width, height, spotSigmaPx: sigma, readVariance, reach }, painter);
+  const table = new SpotTable();
+  const peaks: PeakList = { count: 0, at: new Int32Array(1024) };
+  const noise = new Float32Array(pixels);
+  const response = new Float32Array(pixels);
+  const pictures: FramePictures = {
+    electrons: new Float32Array(pixels),
+    usable: new Uint8Array(pixels),
+    bare: new Float32Array(pixels),
+    model: new Float32Array(pixels),
+  };
+  const near = new Int32Array(64);
+  const members = new Int32Array(JOINT_SPOTS_MOST);
+  let order = new Int32Array(0);
+
+  /** Electrons, what can be used of them, and the frame in units of its noise. */
+  const prepare = ({ counts }: Frame) => {
+    const { electrons, usable, bare } = pictures;
+    const perCount = 1 / recipe.gain;
+    for (let i = 0; i < pixels; i++) {
+      const e = (counts[i] - offsetCounts) * perCount;
+      const good = badPixels[i] === 0 && e - e === 0;
+      electrons[i] = good ? e : 0;
+      usable[i] = good ? 1 : 0;
+    }
+    const light = measureLightLevel(electrons, backgroundE, usable, readVariance);
+    for (let i = 0; i < pixels; i++) {
+      const background = Math.max(0, light.scale * backgroundE[i] + light.shift);
+      bare[i] = background;
+      noise[i] =
+        usable[i] === 0 ? 0 : (electrons[i] - background) / Math.sqrt(background + readVariance + 1e-3);
+      // A saturated pixel shows that there is light, but not how much.
+      if (counts[i] >= saturationCounts) usable[i] = 0;
+    }
+    pictures.model.set(bare);
+  };
+
+  const propose = () => {
+    filter.apply(noise, response);
+    findPeaks(response, width, height, level - LEVEL_MARGIN, peaks);
+    table.count = 0;
+    for (let k = 0; k < peaks.count; k++) {
+      const at = peaks.at[k];
+      const x = at % width;
+      const y = (at - x) / width;
+      const brightness = (response[at] * Math.sqrt(pictures.bare[at] + readVariance)) / filter.kernel.squares;
+      table.add(x + subPixel(at, 1, x, width), y + subPixel(at, width, y, height), brightness, response[at]);
+    }
+    for (let i = 0; i < table.count; i++) painter.paint(pictures.model, table.x[i], table.y[i], table.n[i]);
+  };
+
+  /** Vertex of the parabola through the response at a maximum and its two neighbours along an axis. */
+  const subPixel = (at: number, step: number, place: number, length: number): number => {
+    if (place === 0 || place === length - 1) return 0;
+    const before = response[at - step];
+    const after = response[at + step];
+    const bend = 2 * response[at] - before - after;
+    return bend > 0 ? Math.max(-0.5, Math.min(0.5, (0.5 * (after - before)) / bend)) : 0;
+  };
+
+  const sortOrder = (compare: (a: number, b: number) => number) => {
+    if (order.length < table.count) order = new Int32Array(2 * table.count);
+    for (let i = 0; i < table.count; i++) order[i] = i;
+    return order.subarray(0, table.count).sort(compare);
+  };
+
+  /** Grows a group from its brightest spot by nearest neighbours, leaving room for one more. */
+  const gather = (seed: number): number => {
+    let count = 1;
+    members[0] = seed;
+    table.group[seed] = seed;
+    for (let k = 0; k < count && count < JOINT_SPOTS_MOST - 1; k++) {
+      const found = table.near(members[k], TOGETHER_SIGMAS * sigma, near);
+      for (let m = 0; m < found && count < JOINT_SPOTS_MOST - 1; m++) {
+        const j = near[m];
+        if (table.group[j] >= 0) continue;
+        table.group[j] = seed;
+        members[count++] = j;
+      }
+    }
+    return count;
+  };
+
+  const setOffsetSpread = (i: number) => {
+    const x = Math.max(0, Math.min(width - 1, Math.round(table.x[i])));
+    const y = Math.max(0, Math.min(height - 1, Math.round(table.y[i])));
+    fitter.setOffsetSpread(OFFSET_LEAST_E + OFFSET_SHARE * pictures.bare[y * width + x]);
+  };
+
+  const fitGroups = () => {
+    const cell = Math.max(TOGETHER_SIGMAS * sigma, 2 * reach + 1);
+    table.index(width, height, cell);
+    const found = table.count;
+    const lookLevel = levelForFalseMaxima(
+      recipe.falseSpotsPerFrame,
+      sigma,
+      Math.min(pixels, 1 + found * SECOND_LOOK_PIXELS_SIGMAS2 * sigma * sigma),
+    );
+    const gainLeast = lookLevel * lookLevel;
+    const byResponse = sortOrder((a, b) => table.response[b] - table.response[a] || a - b);
+    for (let k = 0; k < found; k++) {
+      const seed = byResponse[k];
+      if (table.group[seed] >= 0) continue;
+      const count = gather(seed);
+      setOffsetSpread(seed);
+      // A lone faint maximum must gain the likelihood that the level stands for.
+      const aloneLeast = table.response[seed] > level + LEVEL_SURE ? 0 : level * level;
+      fitter.fit(table, members, count, pictures, lookTwice, aloneLeast, gainLeast);
+    }
+    if (lookTwice) refitNextToOthers(cell);
+  };
+
+  /** Groups whose pixels hold light of other groups are fitted again, now that those are known. */
+  const refitNextToOthers = (cell: number) => {
+    table.index(width, height, cell);
+    for (let i = 0; i < table.count; i++) {
+      if (table.alive[i] === 0) continue;
+      const found = table.near(i, 2 * reach + 1, near);
+      let others = false;
+      let count = 1;
+      members[0] = i;
+      for (let m = 0; m < found; m++) {
+        const j = near[m];
+        if (table.group[j] !== table.group[i]) others = true;
+        else if (count < JOINT_SPOTS_MOST) members[count++] = j;
+      }
+      if (!others) continue;
+      setOffsetSpread(i);
+      fitter.fit(table, members, count, pictures, false, 0, 0);
+    }
+  };
+
+  const flagsOf = (i: number): number => {
+    const x = table.x[i];
+    const y = table.y[i];
+    let flags = table.flags[i];
+    const margin = 2 * sigma;
+    if (x < margin || y < margin || x > width - 1 - margin || y > height - 1 - margin) flags |= SPOT_EDGE;
+    if (table.near(i, OVERLAP_SIGMAS * sigma, near) > 0) flags |= SPOT_OVERLAP;
+    if (saturationCounts < Infinity && touchesSaturation(x, y)) flags |= SPOT_SATURATED;
+    return flags;
+  };
+
+  const touchesSaturation = (x: number, y: number): boolean => {
+    const r = Math.ceil(2 * sigma);
+    for (let j = Math.max(0, Math.round(y) - r); j <= Math.min(height - 1, Math.round(y) + r); j++) {
+      for (let i = Math.max(0, Math.round(x) - r); i <= Math.min(width - 1, Math.round(x) + r); i++) {
+        if (pictures.usable[j * width + i] === 0 && badPixels[j * width + i] === 0) return true;
+      }
+    }
+    return false;
+  };
+
+  const detect: Detector['detect'] = (frame, frameIndex, sink) => {
+    if (frame.width !== width || frame.height !== height) {
+      throw new RangeError(
+        `A frame of ${frame.width} x ${frame.height} px came when ${width} x ${height} were expected.`,
+      );
+    }
+    prepare(frame);
+    propose();
+    fitGroups();
+    table.index(width, height, Math.max(TOGETHER_SIGMAS, OVERLAP_SIGMAS) * sigma);
+    const sorted = sortOrder(
+      (a, b) =>
+        Math.fround(table.y[a]) - Math.fround(table.y[b]) ||
+        Math.fround(table.x[a]) - Math.fround(table.x[b]) ||
+        a - b,
+    );
+    for (const i of sorted) {
+      const inside =
+        table.x[i] >= -0.5 && table.y[i] >= -0.5 && table.x[i] < width - 0.5 && table.y[i] < height - 0.5;
+      if (table.alive[i] === 0 || !inside || !(table.sx[i] < Infinity && table.sy[i] < Infinity)) continue;
+      const { x, y, sx, sy, n, response: snr } = table;
+      sink.push(frameIndex, x[i], y[i], sx[i], sy[i], n[i], snr[i], flagsOf(i));
+    }
+  };
+  return { detect };
+}

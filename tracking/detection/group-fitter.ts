@@ -1,0 +1,267 @@
+import { FitWindow } from './fit-window';
+import { JOINT_SPOTS_MOST, JointFit } from './joint-fit';
+import { createSecondLook, SHAPE_ERROR } from './second-look';
+import type { SpotPainter } from './spot-painter';
+import type { SpotTable } from './spot-table';
+
+/** Pictures of the frame at hand, in photoelectrons; `model` is kept up to date with the spots. */
+export interface FramePictures {
+  electrons: Float32Array;
+  usable: Uint8Array;
+  /** Expected light without spots, and with all that are known. */
+  bare: Float32Array;
+  model: Float32Array;
+}
+
+export interface GroupFitterOptions {
+  width: number;
+  height: number;
+  spotSigmaPx: number;
+  readVariance: number;
+  reach: number;
+}
+
+/** A spot of a group whose brightness is not this many standard errors above 0 is dropped. */
+const BRIGHTNESS_SIGMAS_LEAST = 3.5;
+/** Score of elongation from which two spots are tried in place of one (chance of noise: 2 %). */
+const ELONGATION_TRIED = 8;
+/** Peaks of the residual from this response on are tried as a spot. */
+const RESPONSE_TRIED = 3;
+/** Two spots closer than this many spot sizes can't be told from one with a slightly wrong shape. */
+const CLOSEST_SIGMAS = 0.9;
+
+/** Fits groups of neighbouring spots together and asks whether there are more. */
+export interface GroupFitter {
+  /**
+   * @param members numbers of the spots in the table; with `lookTwice`, spots found are added behind.
+   * @param aloneLeast twice the log-likelihood that a lone spot must gain over none, 0 if it needn't.
+   * @param gainLeast twice the log-likelihood that one more spot must gain.
+   * @returns the number of members afterwards.
+   */
+  fit(
+    table: SpotTable,
+    members: Int32Array,
+    count: number,
+    pictures: FramePictures,
+    lookTwice: boolean,
+    aloneLeast: number,
+    gainLeast: number,
+  ): number;
+  /** How far the background near the spots may be off, electrons r.m.s. per pixel. */
+  setOffsetSpread(spreadE: number): void;
+}
+
+export function createGroupFitter(options: GroupFitterOptions, painter: SpotPainter): GroupFitter {
+  const { width, height, spotSigmaPx, readVariance, reach } = options;
+  const window = new FitWindow();
+  const joint = new JointFit(spotSigmaPx, reach, 1);
+  const look = createSecondLook(spotSigmaPx, readVariance);
+  const centresX = new Float64Array(JOINT_SPOTS_MOST);
+  const centresY = new Float64Array(JOINT_SPOTS_MOST);
+  const bestX = new Float64Array(JOINT_SPOTS_MOST);
+  const bestY = new Float64Array(JOINT_SPOTS_MOST);
+  const bestN = new Float64Array(JOINT_SPOTS_MOST);
+
+  const paintAll = (
+    table: SpotTable,
+    members: Int32Array,
+    count: number,
+    model: Float32Array,
+    sign: number,
+  ) => {
+    for (let k = 0; k < count; k++) {
+      const i = members[k];
+      painter.paint(model, table.x[i], table.y[i], sign * table.n[i]);
+    }
+  };
+
+  const load = (pictures: FramePictures, count: number) => {
+    const { electrons, model, usable } = pictures;
+    window.load(electrons, model, usable, width, height, readVariance, centresX, centresY, count, reach);
+  };
+
+  const start = (table: SpotTable, members: Int32Array, count: number) => {
+    joint.count = count;
+    for (let k = 0; k < count; k++) {
+      const i = members[k];
+      joint.x[k] = table.x[i];
+      joint.y[k] = table.y[i];
+      joint.n[k] = table.n[i];
+      centresX[k] = table.x[i];
+      centresY[k] = table.y[i];
+    }
+  };
+
+  const store = (table: SpotTable, members: Int32Array, count: number) => {
+    for (let k = 0; k < count; k++) {
+      const i = members[k];
+      table.x[i] = joint.x[k];
+      table.y[i] = joint.y[k];
+      table.n[i] = joint.n[k];
+      table.sx[i] = joint.sx[k];
+      table.sy[i] = joint.sy[k];
+      table.sn[i] = joint.sn[k];
+    }
+  };
+
+  /** Takes out the faintest member that isn't there, if any; true when one went. */
+  const dropOne = (table: SpotTable, members: Int32Array, count: number): boolean => {
+    let worst = -1;
+    let least = BRIGHTNESS_SIGMAS_LEAST;
+    for (let k = 0; k < count; k++) {
+      const i = members[k];
+      let strength = table.n[i] / table.sn[i];
+      if (tooCloseToBrighter(table, members, count, k) || !(strength > 0)) strength = 0;
+      if (strength < least) {
+        least = strength;
+        worst = k;
+      }
+    }
+    if (worst < 0) return false;
+    table.alive[members[worst]] = 0;
+    for (let k = worst; k < count - 1; k++) members[k] = members[k + 1];
+    return true;
+  };
+
+  const tooCloseToBrighter = (table: SpotTable, members: Int32Array, count: number, k: number) => {
+    const i = members[k];
+    for (let m = 0; m < count; m++) {
+      const j = members[m];
+      if (m === k || table.n[j] < table.n[i]) continue;
+      const distance = Math.hypot(table.x[i] - table.x[j], table.y[i] - table.y[j]);
+      if (distance < CLOSEST_SIGMAS * spotSigmaPx) return true;
+    }
+    return false;
+  };
+
+  const fitPlain = (
+    table: SpotTable,
+    members: Int32Array,
+    count: number,
+    pictures: FramePictures,
+  ): number => {
+    paintAll(table, members, count, pictures.model, -1);
+    while (count > 0) {
+      start(table, members, count);
+      load(pictures, count);
+      joint.run(window);
+      store(table, members, count);
+      if (count === 1 || !dropOne(table, members, count)) break;
+      count--;
+    }
+    paintAll(table, members, count, pictures.model, 1);
+    return count;
+  };
+
+  /** Tries one more spot near those fitted; true when the data ask for it. */
+  const tryOneMore = (
+    table: SpotTable,
+    members: Int32Array,
+    count: number,
+    pictures: FramePictures,
+    gainLeast: number,
+  ): boolean => {
+    let split = -1;
+    let splitScore = ELONGATION_TRIED;
+    let splitX = 0;
+    let splitY = 0;
+    for (let k = 0; k < count; k++) {
+      joint.measureElongation(window, k);
+      if (joint.elongation > splitScore) {
+        splitScore = joint.elongation;
+        split = k;
+        splitX = joint.splitX;
+        splitY = joint.splitY;
+      }
+    }
+    const peak = look.strongest(window, pictures.model, pictures.bare, width);
+    const { response } = peak;
+    if (split < 0 && response < RESPONSE_TRIED) return false;
+    const peakX = peak.xPx;
+    const peakY = peak.yPx;
+    const peakN = peak.brightness;
+
+    // Both likelihoods must come from the same pixels, hence one window for both.
+    paintAll(table, members, count, pictures.model, -1);
+    start(table, members, count);
+    centresX[count] = split >= 0 && response < RESPONSE_TRIED ? table.x[members[split]] + splitX : peakX;
+    centresY[count] = split >= 0 && response < RESPONSE_TRIED ? table.y[members[split]] + splitY : peakY;
+    load(pictures, count + 1);
+    joint.run(window);
+    const before = joint.logLikelihood;
+    let light = 0;
+    for (let k = 0; k < count; k++) light += joint.n[k];
+    const wanted = gainLeast + SHAPE_ERROR * SHAPE_ERROR * light;
+    let best = before + 0.5 * wanted;
+    let found = false;
+    const attempt = () => {
+      joint.run(window);
+      let good = joint.logLikelihood > best;
+      for (let k = 0; k < joint.count; k++) {
+        if (!(joint.n[k] > BRIGHTNESS_SIGMAS_LEAST * joint.sn[k])) good = false;
+        for (let m = 0; m < k; m++) {
+          const apart = Math.hypot(joint.x[k] - joint.x[m], joint.y[k] - joint.y[m]);
+          if (apart < CLOSEST_SIGMAS * spotSigmaPx) good = false;
+        }
+      }
+      if (!good) return;
+      found = true;
+      best = joint.logLikelihood;
+      bestX.set(joint.x);
+      bestY.set(joint.y);
+      bestN.set(joint.n);
+    };
+    if (response >= RESPONSE_TRIED) {
+      start(table, members, count);
+      joint.count = count + 1;
+      joint.x[count] = peakX;
+      joint.y[count] = peakY;
+      joint.n[count] = peakN;
+      attempt();
+    }
+    if (split >= 0) {
+      start(table, members, count);
+      joint.count = count + 1;
+      joint.x[count] = joint.x[split] + splitX;
+      joint.y[count] = joint.y[split] + splitY;
+      joint.x[split] -= splitX;
+      joint.y[split] -= splitY;
+      joint.n[split] *= 0.5;
+      joint.n[count] = joint.n[split];
+      attempt();
+    }
+    if (found) {
+      for (let k = 0; k < count; k++) {
+        const i = members[k];
+        table.x[i] = bestX[k];
+        table.y[i] = bestY[k];
+        table.n[i] = bestN[k];
+      }
+      const fresh = table.add(bestX[count], bestY[count], bestN[count], Math.max(response, 0));
+      table.group[fresh] = table.group[members[0]];
+      members[count] = fresh;
+    }
+    paintAll(table, members, found ? count + 1 : count, pictures.model, 1);
+    return found;
+  };
+
+  const fit: GroupFitter['fit'] = (table, members, count, pictures, lookTwice, aloneLeast, gainLeast) => {
+    let now = fitPlain(table, members, count, pictures);
+    if (now === 1 && aloneLeast > 0 && joint.significance(window) < aloneLeast) {
+      paintAll(table, members, now, pictures.model, -1);
+      table.alive[members[0]] = 0;
+      return 0;
+    }
+    while (lookTwice && now > 0 && now < JOINT_SPOTS_MOST) {
+      if (!tryOneMore(table, members, now, pictures, gainLeast)) break;
+      const before = now + 1;
+      now = fitPlain(table, members, before, pictures);
+      if (now < before) break;
+    }
+    return now;
+  };
+  const setOffsetSpread = (spreadE: number) => {
+    joint.offsetSpreadE = spreadE;
+  };
+  return { fit, setOffsetSpread };
+}

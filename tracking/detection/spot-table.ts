@@ -1,0 +1,122 @@
+/** Spots of one frame while they are being worked on; arrays grow and are reused. */
+export class SpotTable {
+  count = 0;
+  x = new Float64Array(256);
+  y = new Float64Array(256);
+  n = new Float64Array(256);
+  sx = new Float64Array(256);
+  sy = new Float64Array(256);
+  sn = new Float64Array(256);
+  /** Matched-filter response that found it. */
+  response = new Float64Array(256);
+  flags = new Uint8Array(256);
+  /** Number of the group that it is fitted with, -1 for none yet. */
+  group = new Int32Array(256);
+  /** 0 once it turned out not to be a spot. */
+  alive = new Uint8Array(256);
+
+  private cellPx = 1;
+  private columns = 1;
+  private rows = 1;
+  private cellStart = new Int32Array(1);
+  private cellSpots = new Int32Array(256);
+
+  add(x: number, y: number, n: number, response: number): number {
+    if (this.count === this.x.length) this.grow();
+    const i = this.count++;
+    this.x[i] = x;
+    this.y[i] = y;
+    this.n[i] = n;
+    this.sx[i] = Infinity;
+    this.sy[i] = Infinity;
+    this.sn[i] = Infinity;
+    this.response[i] = response;
+    this.flags[i] = 0;
+    this.group[i] = -1;
+    this.alive[i] = 1;
+    return i;
+  }
+
+  /** Sorts the spots present into cells, for `near`. Call again after spots were added. */
+  index(width: number, height: number, cellPx: number): void {
+    this.cellPx = cellPx;
+    this.columns = Math.max(1, Math.ceil(width / cellPx));
+    this.rows = Math.max(1, Math.ceil(height / cellPx));
+    const cells = this.columns * this.rows;
+    if (this.cellStart.length < cells + 1) this.cellStart = new Int32Array(cells + 1);
+    if (this.cellSpots.length < this.count) this.cellSpots = new Int32Array(this.x.length);
+    this.cellStart.fill(0);
+    for (let i = 0; i < this.count; i++) this.cellStart[this.cellOf(i) + 1]++;
+    for (let c = 0; c < cells; c++) this.cellStart[c + 1] += this.cellStart[c];
+    for (let i = this.count - 1; i >= 0; i--) {
+      const cell = this.cellOf(i);
+      // Filled from the back of each cell; the counts come back to the starts below.
+      this.cellSpots[--this.cellStart[cell + 1]] = i;
+    }
+    for (let c = 0; c < cells; c++) this.cellStart[c] = this.cellStart[c + 1];
+    this.cellStart[cells] = this.count;
+  }
+
+  /**
+   * Living spots within `reachPx` (at most a cell) of a spot, itself left out, written to `found`.
+   *
+   * @returns how many; what doesn't fit into `found` is left out.
+   */
+  near(i: number, reachPx: number, found: Int32Array): number {
+    const column = this.clampColumn(Math.floor(this.x[i] / this.cellPx));
+    const row = this.clampRow(Math.floor(this.y[i] / this.cellPx));
+    let count = 0;
+    for (let r = Math.max(0, row - 1); r <= Math.min(this.rows - 1, row + 1); r++) {
+      for (let c = Math.max(0, column - 1); c <= Math.min(this.columns - 1, column + 1); c++) {
+        const cell = r * this.columns + c;
+        for (let k = this.cellStart[cell]; k < this.cellStart[cell + 1]; k++) {
+          const j = this.cellSpots[k];
+          if (j === i || this.alive[j] === 0) continue;
+          const dx = this.x[j] - this.x[i];
+          const dy = this.y[j] - this.y[i];
+          if (dx * dx + dy * dy > reachPx * reachPx || count === found.length) continue;
+          found[count++] = j;
+        }
+      }
+    }
+    return count;
+  }
+
+  private cellOf(i: number): number {
+    const column = this.clampColumn(Math.floor(this.x[i] / this.cellPx));
+    return this.clampRow(Math.floor(this.y[i] / this.cellPx)) * this.columns + column;
+  }
+
+  private clampColumn(column: number): number {
+    return Math.max(0, Math.min(this.columns - 1, column));
+  }
+
+  private clampRow(row: number): number {
+    return Math.max(0, Math.min(this.rows - 1, row));
+  }
+
+  private grow(): void {
+    const room = 2 * this.x.length;
+    const wider = (old: Float64Array) => {
+      const array = new Float64Array(room);
+      array.set(old);
+      return array;
+    };
+    this.x = wider(this.x);
+    this.y = wider(this.y);
+    this.n = wider(this.n);
+    this.sx = wider(this.sx);
+    this.sy = wider(this.sy);
+    this.sn = wider(this.sn);
+    this.response = wider(this.response);
+    const flags = new Uint8Array(room);
+    flags.set(this.flags);
+    this.flags = flags;
+    const group = new Int32Array(room);
+    group.set(this.group);
+    this.group = group;
+    const alive = new Uint8Array(room);
+    alive.set(this.alive);
+    this.alive = alive;
+  }
+}
