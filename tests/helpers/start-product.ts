@@ -70,8 +70,9 @@ export async function startProduct(options: {
 }
 
 /** The product must not see that a test started it. */
-function withoutTestRunner(env: NodeJS.ProcessEnv): Record<string, string | undefined> {
+function withoutTestRunner(env: NodeJS.ProcessEnv): NodeJS.ProcessEnv {
   const foreign = (name: string) =>
     /^(VITEST|TEST_|NODE_ENV$|DATABASE_URL$|NEXTAUTH_|npm_|INIT_CWD$)/.test(name);
-  return Object.fromEntries(Object.entries(env).filter(([name]) => !foreign(name)));
+  const kept = Object.entries(env).filter(([name]) => !foreign(name));
+  return { NODE_ENV: 'production', ...Object.fromEntries(kept) };
 }

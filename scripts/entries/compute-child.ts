@@ -1,0 +1,3 @@
+import { serveComputations } from '@/jobs/compute/child';
+
+serveComputations();
