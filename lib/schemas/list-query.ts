@@ -1,0 +1,100 @@
+import { z } from 'zod';
+
+export const LIST_LIMIT = 50;
+export const LIST_LIMIT_MAX = 200;
+
+const limitError = `limit must be a whole number from 1 to ${LIST_LIMIT_MAX}.`;
+
+/** A whole number as it stands in an address. */
+export const wholeInAddress = (error: string, { min = 0, max = Number.MAX_SAFE_INTEGER } = {}) =>
+  z
+    .string()
+    .regex(/^-?\d{1,15}$/, error)
+    .transform(Number)
+    .pipe(z.number().min(min, error).max(max, error));
+
+/**
+ * Parameters that every list takes, with the fields it can be sorted by and its own filters. The
+ * first field is the usual one; `-field` turns the order round.
+ */
+export function listQuery<F extends z.ZodRawShape>(sortFields: readonly [string, ...string[]], filters: F) {
+  return z.strictObject({
+    limit: wholeInAddress(limitError, { min: 1, max: LIST_LIMIT_MAX }).default(LIST_LIMIT),
+    cursor: z.string().max(2_000, 'This cursor is not one of ours.').optional(),
+    sort: z
+      .string()
+      .refine((sort) => sortFields.includes(sort.replace(/^-/, '')), {
+        error: (issue) => `Unknown sort field '${String(issue.input).slice(0, 60)}'.`,
+      })
+      .default(usualSort(sortFields[0])),
+    ...filters,
+  });
+}
+
+export interface ListQuery {
+  limit: number;
+  cursor?: string;
+  sort: string;
+}
+
+const text = z.string().trim().max(200, 'At most 200 characters.').optional();
+
+/** `deleted=only` shows what was removed and can be restored. */
+const deleted = z.enum(['no', 'only'], "deleted must be 'no' or 'only'.").default('no');
+
+const states = <const T extends readonly [string, ...string[]]>(all: T) =>
+  z.enum(all, `state must be one of ${all.join(', ')}.`).optional();
+
+const idFilter = (name: string) => z.uuid(`${name} must be an id.`).optional();
+
+export const campaignListQuery = listQuery(['createdAt', 'updatedAt', 'name', 'runs', 'recordings'], {
+  q: text,
+  tag: text,
+  deleted,
+});
+
+export const runListQuery = listQuery(
+  ['createdAt', 'updatedAt', 'name', 'startedAt', 'temperature_K', 'heatFlux_W_m2', 'recordings'],
+  { q: text, tag: text, drive: text, deleted },
+);
+
+export const recordingListQuery = listQuery(['createdAt', 'updatedAt', 'name', 'bytes', 'frames', 'state'], {
+  q: text,
+  state: states(['arriving', 'checking', 'ready', 'refused']),
+  deleted,
+});
+
+export const analysisListQuery = listQuery(['createdAt', 'updatedAt', 'finishedAt', 'state', 'tracks'], {
+  state: states(['waiting', 'running', 'done', 'failed', 'stopped']),
+  campaign: idFilter('campaign'),
+  run: idFilter('run'),
+  recording: idFilter('recording'),
+});
+
+export const trackListQuery = listQuery(
+  ['track', 'firstFrame', 'points', 'meanSpeed_m_s', 'pTrapped', 'brightness'],
+  {
+    population: z
+      .enum(['trapped', 'free', 'undecided'], 'population must be trapped, free or undecided.')
+      .optional(),
+  },
+);
+
+export const candidateListQuery = listQuery(['event', 't0_s', 'qValue', 'minSeparation_m'], {
+  accepted: z.enum(['true', 'false'], 'accepted must be true or false.').optional(),
+});
+
+export const recipeListQuery = listQuery(['createdAt', 'name'], { q: text });
+export const memberListQuery = listQuery(['name', 'createdAt'], { q: text });
+export const tokenListQuery = listQuery(['createdAt', 'name', 'lastUsedAt'], {});
+export const jobListQuery = listQuery(['createdAt', 'updatedAt'], {
+  state: states(['waiting', 'running', 'done', 'failed', 'stopped']),
+  kind: text,
+});
+export const workerListQuery = listQuery(['startedAt', 'heartbeatAt'], {});
+export const uploadListQuery = listQuery(['createdAt'], {});
+
+// Newest first; numbers and names from the start.
+function usualSort(field: string): string {
+  return field.endsWith('At') ? `-${field}` : field;
+}
