@@ -21,7 +21,10 @@ export interface TiffPage {
 
 /** A reader of single numbers, so that a page is described in one place. */
 async function pageNumbers(file: TiffFile, { fields }: TiffDirectory) {
-  const one = async (tag: number) => (await file.readNumbers(fields.get(tag), 1))[0];
+  const one = async (tag: number) => {
+    const field = fields.get(tag);
+    return field && (await file.readNumbers(field, 1))[0];
+  };
   return {
     width: await one(TAG.imageWidth),
     height: await one(TAG.imageLength),
