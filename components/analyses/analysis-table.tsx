@@ -16,7 +16,12 @@ import type { ListShape } from '@/lib/lists/list-state';
 import type { AnalysisView } from '@/lib/views/analysis-view';
 import { AnalysisThread } from './analysis-thread';
 
-const SHAPE: ListShape = { sorts: ['createdAt'], defaultSort: '-createdAt', filters: ['state'] };
+const SHAPE: ListShape = {
+  sorts: ['createdAt'],
+  defaultSort: '-createdAt',
+  filters: ['state'],
+  prefix: 'analyses-',
+};
 /** While something is at work the list asks again this often. */
 const REFRESH_MS = 3_000;
 

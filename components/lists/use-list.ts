@@ -28,8 +28,9 @@ export function useList<T>(source: string, shape: ListShape, refreshMs?: number)
   const path = usePathname();
   const params = useSearchParams();
   const router = useRouter();
-  const state = readListState(new URLSearchParams(params), shape);
-  const address = `${source}?${apiQuery(state, PAGE_ROWS)}`;
+  const present = new URLSearchParams(params);
+  const state = readListState(present, shape);
+  const address = `${source}${source.includes('?') ? '&' : '?'}${apiQuery(state, PAGE_ROWS)}`;
   const query = useQuery({
     queryKey: ['list', address],
     queryFn: ({ signal }) => api<ListView<T>>(address, { signal }),
@@ -42,12 +43,12 @@ export function useList<T>(source: string, shape: ListShape, refreshMs?: number)
     query,
     state,
     sort: (field: string) => ({
-      href: listHref(path, sortedBy(state, field), shape),
+      href: listHref(path, sortedBy(state, field), shape, present),
       current: sortDirection(state, field),
     }),
     filter: (name: string, value: string) =>
-      router.replace(listHref(path, filteredBy(state, name, value), shape), { scroll: false }),
-    backHref: before && listHref(path, before, shape),
-    nextHref: next ? listHref(path, nextPage(state, next), shape) : null,
+      router.replace(listHref(path, filteredBy(state, name, value), shape, present), { scroll: false }),
+    backHref: before && listHref(path, before, shape, present),
+    nextHref: next ? listHref(path, nextPage(state, next), shape, present) : null,
   };
 }

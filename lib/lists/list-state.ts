@@ -13,31 +13,55 @@ export interface ListShape {
   sorts: readonly string[];
   defaultSort: string;
   filters: readonly string[];
+  /** Put before every parameter's name, for a page with more than one list. */
+  prefix?: string;
 }
 
 /** Reads the state out of an address; what the list doesn't know is left aside. */
 export function readListState(params: URLSearchParams, shape: ListShape): ListState {
-  const asked = params.get('sort') ?? shape.defaultSort;
+  const own = (name: string) => params.get(`${shape.prefix ?? ''}${name}`);
+  const asked = own('sort') ?? shape.defaultSort;
   const sort = shape.sorts.includes(asked.replace(/^-/, '')) ? asked : shape.defaultSort;
   const filters: Record<string, string> = {};
   for (const name of shape.filters) {
-    const value = params.get(name)?.trim();
+    const value = own(name)?.trim();
     if (value) filters[name] = value;
   }
-  const trail = params.get('trail');
-  return { sort, filters, cursor: params.get('cursor'), trail: trail === null ? [] : trail.split('~') };
+  const trail = own('trail');
+  return {
+    sort,
+    filters,
+    cursor: own('cursor'),
+    trail: trail ? trail.split('~').map((cursor) => (cursor === FIRST ? '' : cursor)) : [],
+  };
 }
 
-/** The address for a state; what is as usual stays out of it. */
-export function listHref(path: string, state: ListState, shape: ListShape): string {
-  const params = new URLSearchParams();
-  if (state.sort !== shape.defaultSort) params.set('sort', state.sort);
-  for (const name of shape.filters) if (state.filters[name]) params.set(name, state.filters[name]);
-  if (state.cursor) params.set('cursor', state.cursor);
-  if (state.trail.length > 0) params.set('trail', state.trail.join('~'));
+/**
+ * The address for a state; what is as usual stays out of it.
+ * @param present parameters of the address now: those of other lists on the page are kept.
+ */
+export function listHref(
+  path: string,
+  state: ListState,
+  shape: ListShape,
+  present = new URLSearchParams(),
+): string {
+  const params = new URLSearchParams(present);
+  const put = (name: string, value: string | null | undefined) => {
+    const own = `${shape.prefix ?? ''}${name}`;
+    if (value) params.set(own, value);
+    else params.delete(own);
+  };
+  put('sort', state.sort === shape.defaultSort ? null : state.sort);
+  for (const name of shape.filters) put(name, state.filters[name]);
+  put('cursor', state.cursor);
+  put('trail', state.trail.map((cursor) => cursor || FIRST).join('~'));
   const query = params.toString();
   return query === '' ? path : `${path}?${query}`;
 }
+
+/** Stands for the first page, which has no cursor, in the trail of an address. */
+const FIRST = '-';
 
 const firstPage = { cursor: null, trail: [] };
 

@@ -25,6 +25,18 @@ describe('the state of a list in its address', () => {
     expect(listHref('/campaigns', read(''), shape)).toBe('/campaigns');
   });
 
+  it('keeps what other lists on the page have in the address', () => {
+    const other = { ...shape, prefix: 'runs-' };
+    const href = listHref(
+      '/x',
+      sortedBy(readListState(new URLSearchParams(), other), 'name'),
+      other,
+      new URLSearchParams('sort=name&q=a'),
+    );
+    expect(href).toBe('/x?sort=name&q=a&runs-sort=name');
+    expect(read(href.split('?')[1]).sort).toBe('name');
+  });
+
   it('leaves a sort field that the list does not know aside', () => {
     expect(read('sort=password').sort).toBe('-createdAt');
   });
