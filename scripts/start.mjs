@@ -87,7 +87,7 @@ async function bringUp(settings, supervisor, isStopping) {
   const { url, port, data, workers, withDemo } = settings;
   await ensurePackages(say);
   const databaseUrl = settings.databaseUrl ?? (await startPrivateCluster(data, { say, supervisor }));
-  await ensureBundles({ say });
+  await ensureBundles({ names: ['migrate', 'worker', ...(withDemo ? ['demo'] : [])], say });
   const env = {
     ...process.env,
     PORT: String(port),

@@ -17,7 +17,8 @@ const SOURCES = [
   'migrations',
 ].concat(['package-lock.json', 'tsconfig.json', 'scripts/platform/bundles.mjs']);
 
-/** Compute processes are started by path, so they belong to every entry that computes. */
+/** Processes that compute are started by their path, so no import shows that these entries need them. */
+const COMPUTING = new Set(['worker', 'analyse', 'bench', 'validate']);
 const COMPUTE_CHILD = 'compute-child';
 
 const entriesFolder = inRoot('scripts', 'entries');
@@ -42,8 +43,8 @@ export const codeVersion = () => {
  * @param {{ names?: string[], say: import('./say.mjs').Say }} options names without ending; default: all
  */
 export async function ensureBundles({ names = entryNames(), say }) {
-  const wanted = [...new Set(names)];
-  if (!names.includes(COMPUTE_CHILD) && entryNames().includes(COMPUTE_CHILD)) wanted.push(COMPUTE_CHILD);
+  const computes = names.some((name) => COMPUTING.has(name));
+  const wanted = [...new Set([...names, ...(computes ? [COMPUTE_CHILD] : [])])];
   const hash = hashSources(ROOT, SOURCES);
   if (isCurrent(wanted, hash)) return;
   await withLock(inRoot('dist', '.bundles.lock'), async () => {
