@@ -1,0 +1,235 @@
+'use client';
+
+import type Konva from 'konva';
+import { useEffect, useRef, useState, type KeyboardEvent, type ReactNode } from 'react';
+import { Layer, Shape, Stage } from 'react-konva';
+import { Button } from '@/components/ui/button';
+import { FramePictures } from './frame-pictures';
+import { readWellColours, type WellColours } from './stroke-style';
+import { useWellGestures } from './use-well-gestures';
+import { useViewer } from './use-viewer';
+import { fitView, panBy, zoomAt, type Point, type Size, type ViewBox } from './view-box';
+import { commandOf } from './viewer-keys';
+import type { ViewerState, ViewerStore } from './viewer-store';
+
+/** What an overlay draws with: a context in CSS px of the well, and what is shown. */
+export interface OverlayScene {
+  ctx: CanvasRenderingContext2D;
+  state: ViewerState;
+  view: ViewBox;
+  well: Size;
+  colours: WellColours;
+  pixelRatio: number;
+}
+
+interface FrameWellProps {
+  store: ViewerStore;
+  recordingId: string;
+  image: Size;
+  /** Name of the well for screen readers. */
+  label: string;
+  describedBy?: string;
+  drawOverlay: (scene: OverlayScene) => void;
+  /** The overlay is drawn again whenever this changes. */
+  overlayVersion?: unknown;
+  onPick: (place: Point, reachPx: number) => void;
+  onTrackStep?: (direction: 1 | -1) => void;
+  onPlay?: () => void;
+  heightClass: string;
+  children?: ReactNode;
+}
+
+/** Frames on one canvas layer, what was found in them on another; neither goes through React when the frame changes. */
+export function FrameWell(props: FrameWellProps) {
+  const { store, recordingId, image, overlayVersion, heightClass, children } = props;
+  const holder = useRef<HTMLDivElement>(null);
+  const imageLayer = useRef<Konva.Layer>(null);
+  const overlayLayer = useRef<Konva.Layer>(null);
+  const pictures = useRef<FramePictures | null>(null);
+  const colours = useRef<WellColours | null>(null);
+  const drawOverlay = useRef(props.drawOverlay);
+  const onPick = useRef(props.onPick);
+  const wellSize = useRef<Size | null>(null);
+  const [size, setSize] = useState<Size | null>(null);
+  const [failure, setFailure] = useState<string | null>(null);
+
+  useEffect(() => {
+    drawOverlay.current = props.drawOverlay;
+    onPick.current = props.onPick;
+  });
+
+  useEffect(() => {
+    const element = holder.current;
+    if (!element) return;
+    colours.current = readWellColours(element);
+    const observer = new ResizeObserver(([entry]) => {
+      const { width, height } = entry.contentRect;
+      const next = { width: Math.round(width), height: Math.round(height) };
+      if (next.width < 1 || next.height < 1) return;
+      store.set({ view: viewAfterResize(store.get().view, wellSize.current, next, image) });
+      wellSize.current = next;
+      setSize(next);
+    });
+    observer.observe(element);
+    return () => observer.disconnect();
+  }, [store, image]);
+
+  useEffect(() => {
+    const source = new FramePictures(recordingId, image, store.frames, () => follow());
+    pictures.current = source;
+    const follow = () => {
+      const state = store.get();
+      source.follow(state, window.devicePixelRatio);
+      if (state.view && wellSize.current) {
+        store.set({ zoomed: state.view.scale > fitView(image, wellSize.current).scale * 1.001 });
+      }
+      const problem = source.failure(state.frame);
+      setFailure(problem?.message ?? null);
+      // Overlay and picture change together: the overlay waits until the picture is there.
+      if (source.picture(state.frame) || problem) store.set({ shown: state.frame });
+      imageLayer.current?.batchDraw();
+      overlayLayer.current?.batchDraw();
+    };
+    const stop = store.subscribe(follow);
+    follow();
+    return () => {
+      stop();
+      source.close();
+      pictures.current = null;
+    };
+  }, [store, recordingId, image]);
+
+  useEffect(() => {
+    overlayLayer.current?.batchDraw();
+  }, [overlayVersion]);
+
+  useWellGestures(holder, store, image, wellSize, onPick);
+
+  const onKeyDown = (event: KeyboardEvent) => {
+    if (event.target !== holder.current) return;
+    const command = commandOf(event);
+    const well = wellSize.current;
+    const { view } = store.get();
+    if (!command || !well || !view) return;
+    if (command.kind === 'clear') {
+      store.set({ chosenTrack: null, chosenEvent: null });
+      return;
+    }
+    event.preventDefault();
+    const middle = { x: well.width / 2, y: well.height / 2 };
+    if (command.kind === 'step') store.step(command.frames);
+    else if (command.kind === 'first') store.goTo(0);
+    else if (command.kind === 'last') store.goTo(store.frames - 1);
+    else if (command.kind === 'zoom') store.set({ view: zoomAt(view, command.factor, middle, image, well) });
+    else if (command.kind === 'pan') store.set({ view: panBy(view, command.dx, command.dy, image, well) });
+    else if (command.kind === 'fit') store.set({ view: fitView(image, well) });
+    else if (command.kind === 'play') props.onPlay?.();
+    else props.onTrackStep?.(command.kind === 'next-track' ? 1 : -1);
+  };
+
+  const paintImage = (context: Konva.Context) => {
+    const { view, shown } = store.get();
+    const picture = pictures.current?.picture(shown);
+    if (!view || !picture) return;
+    const ctx = context._context;
+    // Camera pixels stay squares when enlarged: a smoothed pixel is a measurement that nobody made.
+    ctx.imageSmoothingEnabled = view.scale * window.devicePixelRatio < 1;
+    const corner = view.scale / 2;
+    const [left, top] = [view.offsetX - corner, view.offsetY - corner];
+    ctx.drawImage(picture, left, top, image.width * view.scale, image.height * view.scale);
+  };
+  const paintOverlay = (context: Konva.Context) => {
+    const state = store.get();
+    if (!state.view || !wellSize.current || !colours.current) return;
+    drawOverlay.current({
+      ctx: context._context,
+      state,
+      view: state.view,
+      well: wellSize.current,
+      colours: colours.current,
+      pixelRatio: window.devicePixelRatio,
+    });
+  };
+
+  return (
+    <div className={`relative overflow-hidden border border-well-edge bg-well ${heightClass}`}>
+      <WellSurface
+        holder={holder}
+        store={store}
+        label={props.label}
+        describedBy={props.describedBy}
+        onKeyDown={onKeyDown}
+      >
+        {size ? (
+          <Stage width={size.width} height={size.height} listening={false}>
+            <Layer ref={imageLayer} listening={false}>
+              <Shape sceneFunc={paintImage} listening={false} perfectDrawEnabled={false} />
+            </Layer>
+            <Layer ref={overlayLayer} listening={false}>
+              <Shape sceneFunc={paintOverlay} listening={false} perfectDrawEnabled={false} />
+            </Layer>
+          </Stage>
+        ) : null}
+      </WellSurface>
+      {children}
+      {failure ? (
+        <div
+          role="alert"
+          className="absolute inset-x-0 bottom-0 flex flex-wrap items-center gap-3 bg-well/85 px-3 py-2 text-note text-well-text"
+        >
+          {failure}
+          <Button
+            className="border-well-text! text-well-text! hover:bg-well-mid!"
+            onClick={() => pictures.current?.retry(store.get().frame)}
+          >
+            Try again
+          </Button>
+        </div>
+      ) : null}
+    </div>
+  );
+}
+
+/** The part that takes pointers and keys. One finger scrolls the page until the picture is zoomed. */
+function WellSurface({
+  holder,
+  store,
+  label,
+  describedBy,
+  onKeyDown,
+  children,
+}: {
+  holder: React.RefObject<HTMLDivElement | null>;
+  store: ViewerStore;
+  label: string;
+  describedBy?: string;
+  onKeyDown: (event: KeyboardEvent) => void;
+  children: ReactNode;
+}) {
+  const zoomed = useViewer(store, (state) => state.zoomed);
+  return (
+    <div
+      ref={holder}
+      role="application"
+      aria-roledescription="frame viewer"
+      aria-label={label}
+      aria-describedby={describedBy}
+      tabIndex={0}
+      onKeyDown={onKeyDown}
+      className={`absolute inset-0 cursor-crosshair outline-offset-[-2px] select-none ${zoomed ? 'touch-none' : 'touch-pan-y'}`}
+    >
+      {children}
+    </div>
+  );
+}
+
+/** A new size keeps the middle and, where the whole frame was shown, goes on showing it. */
+function viewAfterResize(view: ViewBox | null, before: Size | null, now: Size, image: Size): ViewBox {
+  if (!view || !before) return fitView(image, now);
+  if (Math.abs(view.scale - fitView(image, before).scale) < 1e-9) return fitView(image, now);
+  return {
+    ...view,
+    offsetX: view.offsetX + (now.width - before.width) / 2,
+    offsetY: view.offsetY + (now.height - before.height) / 2,
+  };
+}
