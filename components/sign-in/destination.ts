@@ -5,7 +5,6 @@
 export function safeDestination(wanted: string | string[] | undefined, home = '/'): string {
   if (typeof wanted !== 'string' || !/^\/(?![/\\])/.test(wanted)) return home;
   // Tabs and line ends are dropped by browsers, so "/<tab>/other" would read as "//other".
-  // eslint-disable-next-line no-control-regex -- control marks are what it looks for
   if (/[\u0000-\u001f\\]/.test(wanted)) return home;
   return wanted.startsWith('/sign-in') ? home : wanted;
 }

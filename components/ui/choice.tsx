@@ -98,7 +98,7 @@ export function Segment<Value extends string>({
               {...(value === undefined
                 ? { defaultChecked: option.value === defaultValue }
                 : { checked: option.value === value })}
-              onChange={() => onChange?.(option.value)}
+              onChange={onChange ? () => onChange(option.value) : undefined}
               className="absolute inset-0 size-full cursor-pointer appearance-none opacity-0"
             />
             {option.label}

@@ -27,19 +27,27 @@ export function partWidths(counts: readonly number[], leastPercent = PART_PERCEN
 export function PopulationThread({ shares }: { shares: readonly PopulationShare[] }) {
   const widths = partWidths(shares.map((part) => part.tracks));
   return (
-    <dl className="flex gap-[6px] pb-[2px] pt-[6px]">
+    <ul className="flex gap-[6px] pb-[2px] pt-[6px]">
       {shares.map((part, index) => (
-        <div key={part.population} style={{ width: `${widths[index]}%` }} className="min-w-0">
+        <li
+          key={part.population}
+          style={{ width: `${widths[index]}%` }}
+          className="min-w-0 whitespace-nowrap"
+        >
           <Part population={part.population} />
-          <dt className="inline text-note">{part.population} </dt>
-          <dd className="inline text-note font-strong">{formatCount(part.tracks)}</dd>
-          <dd className="text-small text-ink-2">
-            <Quantity value={part.share} uncertainty={part.uncertainty} digits={2} />
-            {index === 0 ? ' of tracks' : null}
-          </dd>
-        </div>
+          {/* The last words stand under the thread's end and may reach back under its neighbour. */}
+          <div className={index > 0 && index === shares.length - 1 ? 'flex flex-col items-end' : ''}>
+            <div className="text-note">
+              {part.population} <span className="font-strong">{formatCount(part.tracks)}</span>
+            </div>
+            <div className="text-small text-ink-2">
+              <Quantity value={part.share} uncertainty={part.uncertainty} digits={part.share < 0.1 ? 1 : 2} />
+              {index === 0 ? ' of tracks' : null}
+            </div>
+          </div>
+        </li>
       ))}
-    </dl>
+    </ul>
   );
 }
 

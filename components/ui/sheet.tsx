@@ -72,13 +72,14 @@ interface SectionProps {
   /** Controls at the right end. */
   tools?: ReactNode;
   children: ReactNode;
-  className?: string;
+  /** Without the space above: for a section that starts a column. */
+  flush?: boolean;
 }
 
 /** A part of the page under its own heading. */
-export function Section({ id, title, count, more, tools, children, className = '' }: SectionProps) {
+export function Section({ id, title, count, more, tools, children, flush = false }: SectionProps) {
   return (
-    <section id={id} className={`pt-[22px] first:pt-0 ${className}`}>
+    <section id={id} className={flush ? '' : 'pt-[22px] first:pt-0'}>
       <div className="flex flex-wrap items-baseline gap-x-[10px] gap-y-1 pb-1">
         <h2 className="font-serif text-head2 font-strong">{title}</h2>
         {count ? (
