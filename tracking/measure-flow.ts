@@ -1,4 +1,5 @@
 import type { FlowMeasures, ImageSize, MeasureFlowOptions } from './flow-measures';
+import { findCandidates } from './pairs/find-candidates';
 import { findPopulations } from './populations/populations';
 import { trackMeans } from './track-means';
 import type { Conditions, Recipe, Tracks } from './types';
@@ -24,6 +25,8 @@ export function measureFlow(
   const found = findPopulations(tracks, image, conditions, recipe);
   progress(0.3, 'velocities');
   const pdfs = velocityPdfs(tracks, found.population, conditions, recipe);
+  progress(0.5, 'pairs');
+  const pairs = findCandidates(tracks, found.population, image, conditions, recipe);
   return {
     tracks: {
       population: found.population,
@@ -33,8 +36,8 @@ export function measureFlow(
     },
     populations: found.summary,
     pdfs,
-    pairs: { tested: 0, accepted: 0, expectedByChance: null, surrogates: 0, note: '' },
-    candidates: [],
+    pairs: pairs.summary,
+    candidates: pairs.candidates,
     estimates: [],
   };
 }

@@ -1,0 +1,81 @@
+import type { PairSummary } from '../flow-measures';
+import { FREE, TRAPPED } from '../populations/populations';
+import { createRandom, mixSeed } from '../random';
+import type { Conditions, Recipe, Tracks } from '../types';
+import type { ReconnectionCandidate } from './candidate';
+import { closePairs } from './close-pairs';
+import { describeMeeting } from './describe-meeting';
+import { falseDiscoveryQ } from './false-discovery';
+import { meetingScore } from './judge-meeting';
+import { expectedByChance } from './expected-by-chance';
+import { fitMeeting } from './meeting-fit';
+import { meetsAndParts, separationAround, SIDE_POINTS_MIN } from './separation';
+import { chanceMeetings, chanceOf, pairKey } from './surrogates';
+
+export interface FoundCandidates {
+  candidates: ReconnectionCandidate[];
+  summary: PairSummary;
+}
+
+/**
+ * Pairs of trapped tracks that meet within `recipe.closestApproach_m` and part. Each is fitted by
+ * the square-root law of reconnection and by a straight fly-by; its chance comes from independent
+ * tracks laid over each other, and the false discovery rate from all pairs that were tested.
+ * Undecided tracks are looked at too, but a pair with one is never accepted. Listed are the pairs
+ * that the law describes better than a fly-by.
+ */
+export function findCandidates(
+  tracks: Tracks,
+  population: Uint8Array,
+  image: { width: number; height: number; frames: number },
+  conditions: Conditions,
+  recipe: Pick<Recipe, 'closestApproach_m' | 'falseDiscoveryRate' | 'seed'>,
+): FoundCandidates {
+  const { pixelSize_m: pixelM, frameInterval_s: dtS } = conditions;
+  const reachPx = recipe.closestApproach_m / pixelM;
+  const chosen = Uint8Array.from(population, (code, i) =>
+    code !== FREE && tracks.start[i + 1] - tracks.start[i] >= SIDE_POINTS_MIN ? 1 : 0,
+  );
+  const tested = closePairs(tracks, chosen, image, reachPx).flatMap((meeting) => {
+    const separation = separationAround(tracks, meeting.trackA, meeting.trackB, meeting.frame, pixelM);
+    if (!meetsAndParts(separation)) return [];
+    const fit = fitMeeting(separation, dtS);
+    return [{ meeting, separation, fit, score: meetingScore(separation, fit) }];
+  });
+  const expected = expectedByChance(tracks, population, image, conditions, recipe.closestApproach_m);
+  if (tested.length === 0) {
+    const note = 'No two tracks that may be trapped met and parted.';
+    return {
+      candidates: [],
+      summary: { tested: 0, accepted: 0, expectedByChance: expected, surrogates: 0, note },
+    };
+  }
+  const random = createRandom(mixSeed(recipe.seed, 31));
+  const met = new Set(tested.map(({ meeting }) => pairKey(tracks, meeting.trackA, meeting.trackB)));
+  const chance = chanceMeetings(random, tracks, chosen, image.frames, reachPx, conditions, met);
+  const pChance = tested.map(({ score }) => chanceOf(score, chance));
+  const qValue = falseDiscoveryQ(pChance);
+  const candidates = tested
+    .map((one, i) => ({ ...one, pChance: pChance[i], qValue: qValue[i] }))
+    .filter(({ fit }) => fit.bicGain > 0)
+    .map((one) => {
+      const { trackA, trackB } = one.meeting;
+      const bothTrapped = population[trackA] === TRAPPED && population[trackB] === TRAPPED;
+      return describeMeeting(tracks, one, conditions, recipe.falseDiscoveryRate, bothTrapped);
+    })
+    .sort(
+      (a, b) => a.t0S - b.t0S || a.yPx - b.yPx || a.xPx - b.xPx || a.trackA - b.trackA || a.trackB - b.trackB,
+    );
+  const accepted = candidates.filter((candidate) => candidate.accepted).length;
+  const note = `${tested.length} pairs met and parted, ${candidates.length} are described better by the square-root law than by a fly-by, ${accepted} pass every criterion.`;
+  return {
+    candidates,
+    summary: {
+      tested: tested.length,
+      accepted,
+      expectedByChance: expected,
+      surrogates: chance.score.length,
+      note,
+    },
+  };
+}

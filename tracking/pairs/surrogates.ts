@@ -1,0 +1,116 @@
+import type { Random } from '../random';
+import type { Tracks } from '../types';
+import { pointsByFrame } from './close-pairs';
+import { fitMeeting } from './meeting-fit';
+import { meetingScore } from './judge-meeting';
+import { meetsAndParts, separationAround } from './separation';
+
+/** Meetings of independent tracks to collect, and tries to spend on them. */
+const WANTED = 1000;
+const TRIES_MAX = 40_000;
+
+/** Scores of chance meetings with the weight of each. */
+export interface ChanceMeetings {
+  score: Float64Array;
+  weight: Float64Array;
+  /** Number of equally weighted meetings that carry as much information (Kish 1965). */
+  effective: number;
+}
+
+/**
+ * Lays one track over another: two random tracks of one random frame, the second moved as a whole
+ * so that they lie within reach there, which keeps the motion of each and their common drift but
+ * breaks every bond between them. A slow pair is hit in proportion to the frames it stays within
+ * reach, hence its weight of one over those.
+ *
+ * @param chosen 1 for tracks to draw from.
+ * @param met keys of pairs that really met: they may be what is looked for, so they are not drawn.
+ */
+export function chanceMeetings(
+  random: Random,
+  tracks: Tracks,
+  chosen: Uint8Array,
+  frames: number,
+  reachPx: number,
+  scale: { pixelSize_m: number; frameInterval_s: number },
+  met: ReadonlySet<number>,
+): ChanceMeetings {
+  const { order, from, track } = pointsByFrame(tracks, chosen, frames);
+  const score: number[] = [];
+  const weight: number[] = [];
+  for (let i = 0; i < TRIES_MAX && score.length < WANTED && order.length > 1; i++) {
+    const p = order[random.integer(order.length)];
+    const frame = tracks.frame[p];
+    const others = from[frame + 1] - from[frame];
+    if (others < 2) continue;
+    const q = order[from[frame] + random.integer(others)];
+    if (p === q || met.has(pairKey(tracks, track[p], track[q]))) continue;
+    const distance = reachPx * Math.sqrt(random.uniform());
+    const angle = 2 * Math.PI * random.uniform();
+    const shift = {
+      x: tracks.xPx[p] + distance * Math.cos(angle) - tracks.xPx[q],
+      y: tracks.yPx[p] + distance * Math.sin(angle) - tracks.yPx[q],
+    };
+    const near = framesWithin(tracks, track[p], track[q], shift, reachPx);
+    const s = separationAround(tracks, track[p], track[q], near.nearestFrame, scale.pixelSize_m, shift);
+    if (!meetsAndParts(s)) continue;
+    score.push(meetingScore(s, fitMeeting(s, scale.frameInterval_s)));
+    // A frame of n tracks is drawn in proportion to n but has n^2 pairs.
+    weight.push(others / near.frames);
+  }
+  const sum = weight.reduce((a, b) => a + b, 0);
+  const squares = weight.reduce((a, b) => a + b * b, 0);
+  return {
+    score: Float64Array.from(score),
+    weight: Float64Array.from(weight),
+    effective: squares > 0 ? (sum * sum) / squares : 0,
+  };
+}
+
+/** One number per pair of tracks, in any order. */
+export function pairKey(tracks: Tracks, trackA: number, trackB: number): number {
+  return Math.min(trackA, trackB) * tracks.count + Math.max(trackA, trackB);
+}
+
+/** Chance of a score this good or better among chance meetings, never below 1 / (effective + 1). */
+export function chanceOf(score: number, chance: ChanceMeetings): number {
+  if (score === -Infinity) return 1;
+  let better = 0;
+  let all = 0;
+  for (let i = 0; i < chance.score.length; i++) {
+    all += chance.weight[i];
+    if (chance.score[i] >= score) better += chance.weight[i];
+  }
+  const share = all > 0 ? better / all : 0;
+  return (1 + share * chance.effective) / (1 + chance.effective);
+}
+
+function framesWithin(
+  tracks: Tracks,
+  trackA: number,
+  trackB: number,
+  shift: { x: number; y: number },
+  reachPx: number,
+): { frames: number; nearestFrame: number } {
+  const firstA = tracks.frame[tracks.start[trackA]];
+  const firstB = tracks.frame[tracks.start[trackB]];
+  const low = Math.max(firstA, firstB);
+  const high = Math.min(
+    firstA + tracks.start[trackA + 1] - tracks.start[trackA],
+    firstB + tracks.start[trackB + 1] - tracks.start[trackB],
+  );
+  let frames = 0;
+  let nearestFrame = low;
+  let least = Infinity;
+  for (let f = low; f < high; f++) {
+    const p = tracks.start[trackA] + f - firstA;
+    const q = tracks.start[trackB] + f - firstB;
+    const d = Math.hypot(tracks.xPx[q] + shift.x - tracks.xPx[p], tracks.yPx[q] + shift.y - tracks.yPx[p]);
+    if (d <= reachPx) frames++;
+    if (d < least) {
+      least = d;
+      nearestFrame = f;
+    }
+  }
+  return { frames: Math.max(1, frames), nearestFrame };
+}
