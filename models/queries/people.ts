@@ -1,0 +1,107 @@
+import type { z } from 'zod';
+import type { Role } from '@/lib/access';
+import { LabError, notFound } from '@/lib/errors';
+import type { memberListQuery } from '@/lib/schemas/list-query';
+import type { ListView, PersonView } from '@/lib/views/common';
+import type { MemberView } from '@/lib/views/lab-view';
+import { getSequelize } from '../database';
+import { changeRow, type Change } from './change-row';
+import { containing, listPage } from './list-page';
+import { itemOf, type ItemRow } from './person';
+import { selectRow } from './select';
+import { writeAudit } from './write-audit';
+
+interface Row extends ItemRow {
+  person: PersonView & { email: string };
+  roles: Role[];
+}
+
+const SELECT = `m.id, m.roles, m.revision, m.created_at, m.updated_at,
+  json_build_object('id', u.id, 'name', u.name, 'email', u.email) AS person`;
+const FROM = 'memberships m JOIN users u ON u.id = m.user_id';
+
+const viewOf = (row: Row): MemberView => ({ ...itemOf(row), person: row.person, roles: row.roles });
+
+export async function listMembers(
+  labId: string,
+  query: z.output<typeof memberListQuery>,
+): Promise<ListView<MemberView>> {
+  const bind: unknown[] = [labId];
+  const where = ['m.lab_id = $1'];
+  if (query.q)
+    where.push(`(u.name ILIKE $${bind.push(containing(query.q))} OR u.email ILIKE $${bind.length})`);
+  const page = await listPage<Row>(
+    {
+      select: SELECT,
+      from: FROM,
+      where,
+      bind,
+      idColumn: 'm.id',
+      sorts: {
+        name: { by: 'lower(u.name)', type: 'text' },
+        createdAt: { by: 'm.created_at', type: 'timestamptz' },
+      },
+    },
+    query,
+  );
+  return { items: page.rows.map(viewOf), nextCursor: page.nextCursor };
+}
+
+/** @throws LabError NOT_FOUND */
+export async function getMember(labId: string, id: string): Promise<MemberView> {
+  const row = await selectRow<Row>(`SELECT ${SELECT} FROM ${FROM} WHERE m.lab_id = $1 AND m.id = $2`, [
+    labId,
+    id,
+  ]);
+  if (!row) throw notFound('member');
+  return viewOf(row);
+}
+
+/**
+ * Gives a member other roles and ends their sessions, so that old rights end at once.
+ * @throws LabError FORBIDDEN for one's own roles, STATE when no administrator would be left.
+ */
+export async function changeRoles(change: Change, roles: Role[], byUserId: string): Promise<MemberView> {
+  await getSequelize().transaction(async (transaction) => {
+    const administrators = await lockAdministrators(change.labId, transaction);
+    const member = await getMember(change.labId, change.id);
+    if (member.person.id === byUserId) {
+      throw new LabError('FORBIDDEN', 'Nobody changes their own roles: ask another administrator.');
+    }
+    if (!roles.includes('lab_administrator') && administrators.every((id) => id === change.id)) {
+      throw new LabError('STATE', 'The laboratory would be left without an administrator.');
+    }
+    await changeRow('memberships', change, { roles }, () => getMember(change.labId, change.id), transaction);
+    await selectRow(
+      'UPDATE users SET session_version = session_version + 1, updated_at = now() WHERE id = $1 RETURNING id',
+      [member.person.id],
+      transaction,
+    );
+    await writeAudit(
+      {
+        labId: change.labId,
+        userId: byUserId,
+        action: 'member.roles-changed',
+        subjectKind: 'membership',
+        subjectId: change.id,
+        detail: { before: member.roles, after: roles },
+      },
+      transaction,
+    );
+  });
+  return getMember(change.labId, change.id);
+}
+
+/** Ids of the memberships with the administrator's role; two changes at once can't remove both. */
+async function lockAdministrators(
+  labId: string,
+  transaction: Parameters<typeof writeAudit>[1],
+): Promise<string[]> {
+  const row = await selectRow<{ ids: string[] }>(
+    `SELECT coalesce(array_agg(id), '{}') AS ids FROM (
+       SELECT id FROM memberships WHERE lab_id = $1 AND 'lab_administrator' = ANY(roles) ORDER BY id FOR UPDATE) m`,
+    [labId],
+    transaction,
+  );
+  return row?.ids ?? [];
+}

@@ -1,0 +1,27 @@
+import { statfs } from 'node:fs/promises';
+import { dataDir } from '@/lib/env';
+import type { StorageView } from '@/lib/views/lab-view';
+import { selectRow } from './select';
+
+/** Bytes that are free on the disk of the data folder; null where the system does not say. */
+export async function freeBytes(): Promise<number | null> {
+  const disk = await statfs(dataDir()).catch(() => null);
+  return disk && disk.bavail * disk.bsize;
+}
+
+/** What the recordings of a laboratory take, removed ones included until they are deleted for good. */
+export async function labStorage(labId: string): Promise<StorageView> {
+  const row = await selectRow<{ recordings: number; bytes: string; arriving: string }>(
+    `SELECT count(*)::int AS recordings,
+       coalesce(sum(bytes) FILTER (WHERE state <> 'arriving'), 0) AS bytes,
+       coalesce(sum(bytes) FILTER (WHERE state = 'arriving'), 0) AS arriving
+     FROM recordings WHERE lab_id = $1`,
+    [labId],
+  );
+  return {
+    recordings: row?.recordings ?? 0,
+    bytes: Number(row?.bytes ?? 0),
+    arrivingBytes: Number(row?.arriving ?? 0),
+    freeBytes: await freeBytes(),
+  };
+}
