@@ -1,64 +1,66 @@
 import { type ImageQuality } from './image-quality';
+import { medianPicture } from './median-picture';
 import { addToGrid, pictureShift, spectrum, squareGrid } from './picture-shift';
+import { spreadFrames } from './spread-frames';
 
-/** Positions in the stack at which the picture's place is measured. */
-const GROUPS_MAX = 17;
-/** Frames averaged at each position, so that what stays in place stands out from what flows. */
-const FRAMES_PER_GROUP = 8;
+/** Parts of the stack in which the picture's place is measured. */
+const PARTS_MAX = 9;
+/** Odd, so that a median is a value; spread over the whole part, so that tracers move on in between. */
+const FRAMES_PER_PART = 9;
 
 export type Drift = Pick<ImageQuality, 'drift' | 'driftPx'>;
 
 export interface DriftMeter {
-  /** Frames in order; those between the groups are skipped at no cost. */
+  /** Frames in order. */
   add(frame: number, counts: Float32Array): void;
   result(): Drift;
 }
 
-interface Group {
-  from: number;
-  /** One past the last frame. */
-  to: number;
-}
-
-function groupsOf(frames: number): Group[] {
-  const count = Math.min(GROUPS_MAX, Math.floor(frames / FRAMES_PER_GROUP) || 1);
-  const size = Math.min(FRAMES_PER_GROUP, frames);
+/** Frames of each part, ascending; fewer parts when there are few frames. */
+function partsOf(frames: number): number[][] {
+  const count = Math.max(1, Math.min(PARTS_MAX, Math.floor(frames / FRAMES_PER_PART)));
   return Array.from({ length: count }, (_, i) => {
-    const from = count === 1 ? 0 : Math.round((i * (frames - size)) / (count - 1));
-    return { from, to: from + size };
+    const from = Math.floor((i * frames) / count);
+    const size = Math.floor(((i + 1) * frames) / count) - from;
+    const odd = size >= FRAMES_PER_PART ? FRAMES_PER_PART : size - ((size + 1) % 2);
+    return spreadFrames(size, odd).map((frame) => from + frame);
   });
 }
 
-/** How the whole picture (windows, walls, the light sheet's edges) moves against its place in the first frames. */
+/**
+ * How the picture as a whole (windows, walls, edges of the light sheet, what sticks to them) moves against
+ * its place in the first part of the stack. Tracers that flow on within a part do not count.
+ */
 export function createDriftMeter(width: number, height: number, frames: number): DriftMeter {
   const grid = squareGrid(width, height);
-  const groups = groupsOf(frames);
-  const middles = groups.map(({ from, to }) => Math.floor((from + to - 1) / 2));
+  const parts = partsOf(frames);
   const shifts: ({ x: number; y: number } | null)[] = [];
   let first: ReturnType<typeof spectrum> | null = null;
-  let sums = new Float64Array(grid ? grid.side ** 2 : 0);
+  let pictures: Float64Array[] = [];
 
   const close = ({ side, bin }: NonNullable<typeof grid>) => {
-    const now = spectrum(sums, side);
+    const now = spectrum(medianPicture(pictures), side);
     first ??= now;
     const cells = pictureShift(first, now, side);
     shifts.push(cells && { x: cells.x * bin, y: cells.y * bin });
-    sums = new Float64Array(side ** 2);
+    pictures = [];
   };
 
   return {
     add(frame, counts) {
-      const group = groups[shifts.length];
-      if (!grid || !group || frame < group.from) return;
-      addToGrid(counts, width, grid, sums);
-      if (frame === group.to - 1) close(grid);
+      const part = parts[shifts.length];
+      if (!grid || part?.[pictures.length] !== frame) return;
+      const picture = new Float64Array(grid.side ** 2);
+      addToGrid(counts, width, grid, picture);
+      pictures.push(picture);
+      if (pictures.length === part.length) close(grid);
     },
     result() {
       const known = shifts.slice(1).flatMap((shift) => (shift ? [Math.hypot(shift.x, shift.y)] : []));
       return {
         driftPx: known.length > 0 ? Math.max(...known) : null,
         drift: {
-          frames: middles.slice(0, shifts.length),
+          frames: shifts.map((_, i) => parts[i]![parts[i]!.length >> 1]!),
           xPx: shifts.map((shift) => shift?.x ?? null),
           yPx: shifts.map((shift) => shift?.y ?? null),
         },
