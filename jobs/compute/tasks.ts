@@ -13,6 +13,8 @@ export interface InspectInput {
   channel?: number | 'mean';
   /** What the sender made of the bytes, per file of the source; null where the sender did not say. */
   expectedSha256: (string | null)[];
+  /** Scale for the pictures; what the file says of itself when left out. */
+  scale?: { pixelSizeM: number; frameIntervalS: number };
   /** False where nobody will look at pictures. */
   previews: boolean;
 }
@@ -32,6 +34,8 @@ export interface MeasureImageOutput {
 export interface DetectChunkInput {
   stackDir: string;
   model: Uint8Array;
+  /** Tells models apart: the same key always comes with the same model and recipe. */
+  modelKey: string;
   recipe: Recipe;
   firstFrame: number;
   frames: number;

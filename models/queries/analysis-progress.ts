@@ -18,7 +18,11 @@ export function progressAt(stage: AnalysisStage, share: number): number {
 }
 
 /** An analysis begins its next stage; its row is locked by the transaction. */
-export async function enterStage(analysisId: string, stage: AnalysisStage, transaction: Transaction): Promise<void> {
+export async function enterStage(
+  analysisId: string,
+  stage: AnalysisStage,
+  transaction: Transaction,
+): Promise<void> {
   await getSequelize().query(
     `UPDATE analyses SET stage = $2, progress = $3, state = 'running', started_at = coalesce(started_at, now()),
        updated_at = now(), revision = revision + 1 WHERE id = $1`,

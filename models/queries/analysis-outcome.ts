@@ -63,7 +63,13 @@ export async function saveMeasures(
     `INSERT INTO analysis_measures (analysis_id, tracks_revision, populations, pdfs, estimates)
      VALUES ($1, $2, $3, $4, $5)`,
     {
-      bind: [analysisId, tracksRevision, populations, JSON.stringify(measures.pdfs), JSON.stringify(measures.estimates)],
+      bind: [
+        analysisId,
+        tracksRevision,
+        populations,
+        JSON.stringify(measures.pdfs),
+        JSON.stringify(measures.estimates),
+      ],
       transaction,
     },
   );
@@ -73,7 +79,19 @@ export async function saveMeasures(
       `INSERT INTO candidates (id, lab_id, analysis_id, event, track_a, track_b, t0_s, p_chance, q_value, accepted, facts)
        VALUES ($1, $2, $3, $4, $5, $6, $7, $8, $9, $10, $11)`,
       {
-        bind: [newId(), labId, analysisId, event, trackA, trackB, t0S, pChance, qValue, accepted, JSON.stringify(candidate)],
+        bind: [
+          newId(),
+          labId,
+          analysisId,
+          event,
+          trackA,
+          trackB,
+          t0S,
+          pChance,
+          qValue,
+          accepted,
+          JSON.stringify(candidate),
+        ],
         transaction,
       },
     );
@@ -119,7 +137,9 @@ export async function readMeasures(
   analysisId: string,
   tracksRevision?: number,
 ): Promise<StoredMeasures | null> {
-  type Row = Omit<StoredMeasures, 'populations' | 'pairs'> & { populations: PopulationSummary & { pairs: PairSummary } };
+  type Row = Omit<StoredMeasures, 'populations' | 'pairs'> & {
+    populations: PopulationSummary & { pairs: PairSummary };
+  };
   const rows = await getSequelize().query<Row>(
     `SELECT m.tracks_revision AS "tracksRevision", m.computed_at AS "computedAt", m.populations, m.pdfs, m.estimates
      FROM analysis_measures m JOIN analyses a ON a.id = m.analysis_id

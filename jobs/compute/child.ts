@@ -1,0 +1,51 @@
+import { setPriority } from 'node:os';
+import type { FromChild, TaskInput, TaskName, TaskOutput, ToChild } from './tasks';
+import { detectChunk } from './work/detect-chunk';
+import { inspectStack } from './work/inspect-stack';
+import { linkTracks } from './work/link-tracks';
+import { measureFlow } from './work/measure-flow';
+import { measureImage } from './work/measure-image';
+import { tryRecipe } from './work/try-recipe';
+import type { WorkContext } from './work/work-context';
+
+type Work = { [K in TaskName]: (input: TaskInput<K>, context: WorkContext) => Promise<TaskOutput<K>> };
+
+const WORK: Work = { inspectStack, measureImage, detectChunk, linkTracks, measureFlow, tryRecipe };
+
+/** Progress is told so often at most, ms. */
+const TELL_MS = 200;
+
+/** Web server and database come first on a busy machine: nobody clicks on a computation. */
+const NICE = 5;
+
+/** The main program of a child process: one computation after the other, until the parent is gone. */
+export function serveComputations(): void {
+  setPriority(NICE);
+  process.on('disconnect', () => process.exit(0));
+  // Ctrl-C reaches the whole group; the parent decides what becomes of its children.
+  process.on('SIGINT', () => undefined);
+  process.on('message', (message) => void serve(message as ToChild));
+}
+
+async function serve({ id, task, input }: ToChild): Promise<void> {
+  let told = 0;
+  const onProgress = (share: number) => {
+    const now = performance.now();
+    if (now - told < TELL_MS) return;
+    told = now;
+    tell({ id, kind: 'progress', share });
+  };
+  try {
+    const work = WORK[task] as (input: unknown, context: WorkContext) => Promise<TaskOutput<TaskName>>;
+    tell({ id, kind: 'done', output: await work(input, { onProgress }) });
+  } catch (cause) {
+    const { name, message, stack, field } = cause as Error & { field?: string };
+    tell({ id, kind: 'failed', error: { name, message, stack, field } });
+  }
+}
+
+function tell(message: FromChild): void {
+  process.send?.(message, undefined, undefined, (error: Error | null) => {
+    if (error) process.exit(1);
+  });
+}

@@ -1,0 +1,19 @@
+import { detectSpotsHandler } from './detect-spots.handler';
+import { ingestRecordingHandler } from './ingest-recording.handler';
+import type { JobHandler } from './job-context';
+import { linkTracksHandler } from './link-tracks.handler';
+import { measureFlowHandler } from './measure-flow.handler';
+import { measureImageHandler } from './measure-image.handler';
+
+const handlers = [
+  ingestRecordingHandler,
+  measureImageHandler,
+  detectSpotsHandler,
+  linkTracksHandler,
+  measureFlowHandler,
+] as unknown as JobHandler[];
+
+/** Every kind of work and who does it. */
+export const HANDLERS: ReadonlyMap<string, JobHandler> = new Map(
+  handlers.map((handler) => [handler.definition.kind, handler]),
+);

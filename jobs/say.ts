@@ -1,0 +1,6 @@
+/** One structured line of a log. */
+export type Say = (
+  level: 'info' | 'warn' | 'error',
+  message: string,
+  facts?: Record<string, unknown>,
+) => void;

@@ -1,0 +1,21 @@
+import type { Conditions } from '@/tracking/types';
+import type { Run } from '../run';
+
+/**
+ * The conditions that an analysis of a recording of the run is computed with; null while pixel size
+ * or frame interval are unknown, without which no length and no velocity can be told.
+ */
+export function conditionsOfRun(run: Run): Conditions | null {
+  const { pixelSizeM, frameIntervalS } = run;
+  if (pixelSizeM === null || frameIntervalS === null) return null;
+  return {
+    pixelSize_m: pixelSizeM,
+    frameInterval_s: frameIntervalS,
+    exposure_s: run.exposureS,
+    sheetThickness_m: run.sheetThicknessM,
+    temperature_K: run.temperatureK,
+    heatFlux_W_m2: run.heatFluxWM2,
+    flowDirection: run.flowDirection,
+    tracer: run.tracer,
+  };
+}
