@@ -61,23 +61,22 @@ interface IntervalThreadProps {
   widthPx?: number;
 }
 
-const HEIGHT_PX = 18;
-const MIDDLE_PX = HEIGHT_PX / 2;
+/** The same text on server and browser, whose logarithms may differ in the last digit. */
+const percent = (share: number) => `${(share * 100).toFixed(2)}%`;
 
 /** How sure: bead = value, thick thread = statistical, thin = with systematic, ring = prior or left out. */
 export function IntervalThread({ intervals, axis, label, widthPx = 220 }: IntervalThreadProps) {
-  const x = (value: number) => shareOnLogAxis(value, axis) * widthPx;
+  const x = (value: number) => percent(shareOnLogAxis(value, axis));
   return (
     <svg
-      viewBox={`0 0 ${widthPx} ${HEIGHT_PX}`}
       role="img"
       aria-label={label}
-      className="block h-[18px] max-w-full overflow-visible"
-      style={{ width: widthPx }}
-      preserveAspectRatio="none"
+      height="18"
+      className="block w-full overflow-visible"
+      style={{ maxWidth: widthPx }}
     >
       {logGrid(axis).map((value) => (
-        <path key={value} d={`M${x(value)} 0V${HEIGHT_PX}`} className="stroke-line" />
+        <line key={value} x1={x(value)} x2={x(value)} y1="0" y2="18" className="stroke-line" />
       ))}
       {intervals
         .filter((item) => item.value > 0)
@@ -88,23 +87,26 @@ export function IntervalThread({ intervals, axis, label, widthPx = 220 }: Interv
   );
 }
 
-function Interval({ item, x }: { item: ThreadInterval; x: (value: number) => number }) {
-  const hasWide = (item.wideLow ?? 0) > 0 && (item.wideHigh ?? 0) > 0;
+function Interval({ item, x }: { item: ThreadInterval; x: (value: number) => string }) {
+  const hasWide = typeof item.wideLow === 'number' && typeof item.wideHigh === 'number' && item.wideHigh > 0;
   // An interval that reaches zero runs off the log axis at its left.
-  const from = (low: number) => (low > 0 ? x(low) : 0);
+  const from = (low: number) => (low > 0 ? x(low) : '0%');
   return (
     <g className={item.tone === 'amber' ? 'text-amber' : 'text-ink'}>
       {hasWide ? (
-        <path d={`M${from(item.wideLow!)} ${MIDDLE_PX}H${x(item.wideHigh!)}`} className="stroke-ink-2" />
+        <line x1={from(item.wideLow!)} x2={x(item.wideHigh!)} y1="9" y2="9" className="stroke-ink-2" />
       ) : null}
-      <path
-        d={`M${from(item.low)} ${MIDDLE_PX}H${x(item.high)}`}
+      <line
+        x1={from(item.low)}
+        x2={x(item.high)}
+        y1="9"
+        y2="9"
         stroke="currentColor"
         strokeWidth={hasWide ? 3 : 1.5}
       />
       <circle
         cx={x(item.value)}
-        cy={MIDDLE_PX}
+        cy="9"
         r={item.hollow ? 4 : 4.2}
         className={item.hollow ? 'fill-paper' : 'stroke-paper'}
         {...(item.hollow
