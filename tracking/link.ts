@@ -1,0 +1,55 @@
+import { assembleTracks } from './linking/assemble-tracks';
+import { linkPass, type LinkLimits } from './linking/link-pass';
+import { firstStatistics, measureStatistics } from './linking/motion-statistics';
+import type { Recipe, Spots, Tracks } from './types';
+
+/** Size of the recording that the spots are of. */
+export interface RecordingSize {
+  frames: number;
+  width: number;
+  height: number;
+}
+
+/**
+ * Tracks from spots. Each frame is one assignment problem, solved exactly: which predicted tracer
+ * owns which spot, priced against tracers being missed and spots being new or false. Links are
+ * made twice: with wide assumptions to learn how the tracers of this recording move, then with
+ * what was learned. The same spots give the same tracks, in order of first frame, then y, then x.
+ *
+ * @param spots of the whole recording, by frame, then y, then x.
+ * @throws RangeError when spots are out of order or outside the recording's frames.
+ */
+export function linkSpots(
+  spots: Spots,
+  size: RecordingSize,
+  recipe: Pick<Recipe, 'longestStepPx' | 'mayVanishFrames' | 'shortestTrackFrames'>,
+): Tracks {
+  checkOrder(spots, size.frames);
+  if (!(recipe.longestStepPx > 0)) {
+    throw new RangeError(`longestStepPx must be > 0. Received ${recipe.longestStepPx}.`);
+  }
+  const limits: LinkLimits = {
+    width: size.width,
+    height: size.height,
+    frames: size.frames,
+    longestStepPx: recipe.longestStepPx,
+    mayVanishFrames: recipe.mayVanishFrames,
+  };
+  const rough = linkPass(spots, limits, firstStatistics(spots, limits));
+  const before = linkPass(spots, limits, measureStatistics(spots, rough, limits));
+  return assembleTracks(spots, before, recipe.shortestTrackFrames);
+}
+
+function checkOrder(spots: Spots, frames: number): void {
+  for (let s = 1; s < spots.count; s++) {
+    if (spots.frame[s] < spots.frame[s - 1]) {
+      throw new RangeError(
+        `Spots of frame ${spots.frame[s]} came after those of frame ${spots.frame[s - 1]}.`,
+      );
+    }
+  }
+  const last = spots.count > 0 ? spots.frame[spots.count - 1] : 0;
+  if (spots.count > 0 && last >= frames) {
+    throw new RangeError(`A spot is in frame ${last}, but the recording has ${frames} frames.`);
+  }
+}

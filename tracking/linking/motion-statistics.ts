@@ -1,0 +1,125 @@
+import type { Spots } from '../types';
+import type { LinkLimits } from './link-pass';
+import type { MotionStatistics } from './motion';
+
+/** Median of the square of a standard normal value. */
+const MEDIAN_OF_SQUARE = 0.4549364;
+/** Changes of velocity beyond this many usual ones count as jumps. */
+const JUMP_SIGMAS = 3.5;
+const JITTER_LEAST_PX2 = 0.02 ** 2;
+const SAMPLES_LEAST = 30;
+const JUMP_SHARE_LEAST = 0.01;
+const JUMP_SHARE_MOST = 0.2;
+const FOUND_SHARE_MOST = 0.99;
+const FOUND_SHARE_LEAST = 0.5;
+
+/** What is assumed before anything was linked: anything up to the longest step is as good. */
+export function firstStatistics(spots: Spots, limits: LinkLimits): MotionStatistics {
+  const spread = limits.longestStepPx / 2.5;
+  const perPx2 = spots.count / Math.max(1, limits.frames * limits.width * limits.height);
+  return {
+    jitter: Math.min(0.25, spread * spread),
+    meanX: 0,
+    meanY: 0,
+    startVariance: spread * spread,
+    jumpShare: 0.05,
+    jumpVariance: spread * spread,
+    foundShare: 0.95,
+    newPerPx2: Math.max(1e-12, 0.05 * perPx2),
+  };
+}
+
+/**
+ * Statistics of the steps that a first pass linked, robust against its mistakes: medians for what
+ * is usual, a share for what isn't.
+ *
+ * @param before for each spot the one before it in its track, or -1.
+ */
+export function measureStatistics(spots: Spots, before: Int32Array, limits: LinkLimits): MotionStatistics {
+  const first = firstStatistics(spots, limits);
+  const stepX: number[] = [];
+  const stepY: number[] = [];
+  const changes: number[] = [];
+  let measured = 0;
+  let links = 0;
+  let spanned = 0;
+  const followed = new Uint8Array(spots.count);
+  for (let s = 0; s < spots.count; s++) if (before[s] >= 0) followed[before[s]] = 1;
+  for (let s = 0; s < spots.count; s++) {
+    const b = before[s];
+    if (b < 0) continue;
+    links++;
+    spanned += spots.frame[s] - spots.frame[b];
+    if (spots.frame[s] - spots.frame[b] !== 1) continue;
+    const a = before[b];
+    if (a < 0 || spots.frame[b] - spots.frame[a] !== 1) continue;
+    stepX.push(spots.xPx[s] - spots.xPx[b]);
+    stepY.push(spots.yPx[s] - spots.yPx[b]);
+    // Second difference: the change of velocity, plus three measurement errors of weight 1, -2, 1.
+    changes.push((spots.xPx[s] - 2 * spots.xPx[b] + spots.xPx[a]) ** 2 - noise(spots.sxPx, s, b, a));
+    changes.push((spots.yPx[s] - 2 * spots.yPx[b] + spots.yPx[a]) ** 2 - noise(spots.syPx, s, b, a));
+    measured++;
+  }
+  if (measured < SAMPLES_LEAST) return first;
+
+  const noiseOf = meanNoise(spots);
+  const typical = Math.max(0, median(changes) + noiseOf) / MEDIAN_OF_SQUARE;
+  const jitter = Math.min(first.startVariance, Math.max(JITTER_LEAST_PX2, typical - noiseOf));
+  const usual = JUMP_SIGMAS * JUMP_SIGMAS * (jitter + noiseOf);
+  let jumps = 0;
+  let jumpSquares = 0;
+  for (const change of changes) {
+    if (change + noiseOf <= usual) continue;
+    jumps++;
+    jumpSquares += change;
+  }
+  const jumpShare = clamp(jumps / changes.length, JUMP_SHARE_LEAST, JUMP_SHARE_MOST);
+  const jumpVariance = jumps >= SAMPLES_LEAST ? Math.max(jumpSquares / jumps, usual) : first.jumpVariance;
+  const meanX = mean(stepX);
+  const meanY = mean(stepY);
+  const startVariance = 0.5 * (spread(stepX, meanX) + spread(stepY, meanY));
+  const starts = spots.count - links;
+  return {
+    jitter,
+    meanX,
+    meanY,
+    startVariance: Math.max(jitter, startVariance),
+    jumpShare,
+    jumpVariance: Math.min(first.jumpVariance, jumpVariance),
+    foundShare: clamp(links / Math.max(1, spanned), FOUND_SHARE_LEAST, FOUND_SHARE_MOST),
+    newPerPx2: Math.max(1, starts) / Math.max(1, limits.frames * limits.width * limits.height),
+  };
+}
+
+function noise(errors: Float32Array, s: number, b: number, a: number): number {
+  return errors[s] ** 2 + 4 * errors[b] ** 2 + errors[a] ** 2;
+}
+
+/** Six times the median position variance: the noise of a typical second difference. */
+function meanNoise({ sxPx, count }: Spots): number {
+  const step = Math.max(1, Math.floor(count / 5000));
+  const values: number[] = [];
+  for (let s = 0; s < count; s += step) values.push(sxPx[s] ** 2);
+  return 6 * median(values);
+}
+
+function median(values: number[]): number {
+  const sorted = Float64Array.from(values).sort();
+  return sorted[sorted.length >> 1];
+}
+
+function mean(values: readonly number[]): number {
+  let sum = 0;
+  for (const value of values) sum += value;
+  return sum / values.length;
+}
+
+function spread(values: readonly number[], around: number): number {
+  let sum = 0;
+  for (const value of values) sum += (value - around) ** 2;
+  return sum / values.length;
+}
+
+function clamp(value: number, least: number, most: number): number {
+  return Math.min(most, Math.max(least, value));
+}
