@@ -33,7 +33,7 @@ interface FrameWellProps {
   /** The overlay is drawn again whenever this changes. */
   overlayVersion?: unknown;
   onPick: (place: Point, reachPx: number) => void;
-  onTrackStep?: (direction: 1 | -1) => void;
+  onTrackStep?: (direction: 1 | -1, well: Size) => void;
   onPlay?: () => void;
   heightClass: string;
   children?: ReactNode;
@@ -124,7 +124,7 @@ export function FrameWell(props: FrameWellProps) {
     else if (command.kind === 'pan') store.set({ view: panBy(view, command.dx, command.dy, image, well) });
     else if (command.kind === 'fit') store.set({ view: fitView(image, well) });
     else if (command.kind === 'play') props.onPlay?.();
-    else props.onTrackStep?.(command.kind === 'next-track' ? 1 : -1);
+    else props.onTrackStep?.(command.kind === 'next-track' ? 1 : -1, well);
   };
 
   const paintImage = (context: Konva.Context) => {

@@ -33,7 +33,7 @@ interface ViewerPanelProps {
   drawOverlay?: (scene: OverlayScene) => void;
   overlayVersion?: unknown;
   onPick?: (place: Point, reachPx: number) => void;
-  onTrackStep?: (direction: 1 | -1) => void;
+  onTrackStep?: (direction: 1 | -1, well: Size) => void;
   /** Tags and notes that lie on the well. */
   onWell?: ReactNode;
   /** Between the time line and the controls: a legend. */
