@@ -1,0 +1,36 @@
+import type { Metadata } from 'next';
+import { requireViewer } from '@/auth/page';
+import { PasswordForm } from '@/components/account/password-form';
+import { PathThread } from '@/components/ui/path-thread';
+import { Facts, PageTitle, Section, Sheet } from '@/components/ui/sheet';
+import { ROLE_NAMES } from '@/lib/access';
+import { pathLevels } from '../path-levels';
+import { changeOwnPassword } from './actions';
+
+export const metadata: Metadata = { title: 'Account' };
+
+export default async function AccountPage() {
+  const viewer = await requireViewer('own-account', '/account');
+  return (
+    <>
+      <PathThread levels={pathLevels(viewer)} />
+      <Sheet>
+        <PageTitle>{viewer.name}</PageTitle>
+        <Section title="You">
+          <Facts
+            items={[
+              { name: 'E-mail', value: viewer.email },
+              ...viewer.labs.map(({ name, roles }) => ({
+                name: 'Laboratory',
+                value: `${name}: ${roles.map((role) => ROLE_NAMES[role].toLowerCase()).join(', ')}`,
+              })),
+            ]}
+          />
+        </Section>
+        <Section title="Password" count="changing it ends your other sessions">
+          <PasswordForm change={changeOwnPassword} />
+        </Section>
+      </Sheet>
+    </>
+  );
+}
