@@ -24,7 +24,7 @@ const lags = z
   .array(lag)
   .min(1)
   .max(LAGS_MOST)
-  .refine((list) => new Set(list).size === list.length);
+  .refine((list) => new Set(list).size === list.length, lagsError);
 
 /** A recipe as people and scripts write it: any field may be left out or be "auto". */
 export const recipeRequestSchema = z.strictObject({
