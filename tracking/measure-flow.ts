@@ -1,3 +1,4 @@
+import { lineDensityEstimates } from './estimates/line-density-estimates';
 import type { FlowMeasures, ImageSize, MeasureFlowOptions } from './flow-measures';
 import { findCandidates } from './pairs/find-candidates';
 import { findPopulations } from './populations/populations';
@@ -27,17 +28,27 @@ export function measureFlow(
   const pdfs = velocityPdfs(tracks, found.population, conditions, recipe);
   progress(0.5, 'pairs');
   const pairs = findCandidates(tracks, found.population, image, conditions, recipe);
+  progress(0.8, 'estimates');
+  const { estimates, line } = lineDensityEstimates(
+    tracks,
+    found.population,
+    found.summary.note,
+    image,
+    conditions,
+    recipe,
+  );
+  progress(1, 'estimates');
   return {
     tracks: {
       population: found.population,
       pTrapped: found.pTrapped,
-      line: new Int32Array(tracks.count).fill(-1),
+      line,
       ...trackMeans(tracks, conditions, recipe.lagsFrames[0]),
     },
     populations: found.summary,
     pdfs,
     pairs: pairs.summary,
     candidates: pairs.candidates,
-    estimates: [],
+    estimates,
   };
 }

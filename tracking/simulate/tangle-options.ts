@@ -1,3 +1,8 @@
+import { LINE_VELOCITY_FACTOR, lineVelocity } from '../estimates/line-velocity-law';
+
+/** Wobble of reconnecting pairs in a scene without a tangle, m/s: that of lines 0.3 mm apart. */
+const VELOCITY_WITHOUT_LINES_M_S = 0.5e-3;
+
 /** A recording to simulate. Image axes; the sheet is centred on z = 0 with a sharp edge. */
 export interface TangleOptions {
   widthPx: number;
@@ -21,7 +26,10 @@ export interface TangleOptions {
   flowDirection?: [number, number];
   /** Width of the channel across the flow, m; default 1.2 times the image. */
   channelWidthM?: number;
-  /** R.m.s. velocity of a line per component, m/s, and its correlation time, s. */
+  /**
+   * R.m.s. velocity of a line per component, m/s (default: what its own curvature gives at this
+   * line density), and its correlation time, s.
+   */
   wobbleMPerS?: number;
   wobbleTimeS?: number;
   /** The same for free tracers. */
@@ -61,7 +69,7 @@ export function fillTangleOptions(options: TangleOptions): FilledTangleOptions {
   return {
     flowDirection: [fx, fy],
     channelWidthM: 1.2 * across * pixelSizeM,
-    wobbleMPerS: 0.5e-3,
+    wobbleMPerS: ownVelocity(options.lineDensityM2),
     wobbleTimeS: 0.1,
     freeWobbleMPerS: 0.2e-3,
     freeWobbleTimeS: 0.3,
@@ -74,4 +82,10 @@ export function fillTangleOptions(options: TangleOptions): FilledTangleOptions {
     events: 0,
     ...options,
   };
+}
+
+/** R.m.s. velocity of one component of lines that move by their own curvature, m/s. */
+function ownVelocity(lineDensityM2: number): number {
+  if (!(lineDensityM2 > 0)) return VELOCITY_WITHOUT_LINES_M_S;
+  return lineVelocity(1 / Math.sqrt(lineDensityM2), LINE_VELOCITY_FACTOR) / Math.sqrt(3);
 }

@@ -1,0 +1,62 @@
+import type { Conditions, Recipe, Tracks } from '../types';
+import { beadsPerLength } from './beads-per-length';
+import { combine } from './combine';
+import { withoutTracers, type EstimateContext } from './context';
+import type { Estimate, EstimateMethod } from './estimate';
+import { findFellows } from './fellows';
+import { heatFluxPrior } from './heat-flux-prior';
+import { asEstimates, notUsable, type DensityResult } from './interval';
+import { lineGroups } from './line-groups';
+import { lineVelocityEstimate } from './line-velocity';
+import { neighbourDistanceEstimate } from './neighbour-distance';
+import { trappedPool } from './trapped-pool';
+
+const BY_TRACERS: readonly [EstimateMethod, (context: EstimateContext) => DensityResult][] = [
+  ['neighbour-distance', neighbourDistanceEstimate],
+  ['beads-per-length', beadsPerLength],
+  ['line-velocity', lineVelocityEstimate],
+];
+
+export interface LineDensityEstimates {
+  /** Line density and line spacing by every method and combined. */
+  estimates: Estimate[];
+  /** Number of the line of a trapped track, -1 for others. */
+  line: Int32Array;
+}
+
+/**
+ * Line density and spacing by every method that the recording allows, each with an interval or the
+ * reason why it can't be used, and combined.
+ *
+ * @param populationNote why tracks have the names they have.
+ */
+export function lineDensityEstimates(
+  tracks: Tracks,
+  population: Uint8Array,
+  populationNote: string,
+  image: { width: number; height: number; frames: number },
+  conditions: Conditions,
+  recipe: Recipe,
+): LineDensityEstimates {
+  const pool = trappedPool(tracks, population, image, conditions);
+  const groups = lineGroups(tracks, pool, image);
+  const refusal = withoutTracers(pool, populationNote);
+  const results: DensityResult[] = refusal
+    ? BY_TRACERS.map(([method]) => notUsable(method, refusal))
+    : measured();
+  results.push(heatFluxPrior(conditions));
+  results.push(combine(results));
+  return { estimates: results.flatMap(asEstimates), line: groups.line };
+
+  function measured(): DensityResult[] {
+    const h = conditions.sheetThickness_m;
+    const tracersByLine = new Float64Array(groups.lines);
+    for (let i = 0; i < tracks.count; i++) {
+      if (groups.line[i] >= 0)
+        tracersByLine[groups.line[i]] += (tracks.start[i + 1] - tracks.start[i]) / image.frames;
+    }
+    const fellows = h ? findFellows(pool, groups, image, conditions, h, recipe.spotSizePx) : null;
+    const context = { tracks, image, conditions, recipe, pool, groups, fellows, tracersByLine };
+    return BY_TRACERS.map(([, estimate]) => estimate(context));
+  }
+}

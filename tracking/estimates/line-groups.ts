@@ -1,0 +1,96 @@
+import { closePairs } from '../pairs/close-pairs';
+import type { Tracks } from '../types';
+import { pairMotion, type PairMotion } from './pair-motion';
+import type { TrappedPool } from './trapped-pool';
+
+/** Pairs are looked at within this many typical distances of trapped tracers, and a part of the image. */
+const REACH_DISTANCES = 4;
+const REACH_IMAGE_PART = 0.25;
+/** Lengths of common tracks tried, frames: longer ones tell better but are fewer. */
+const LEAST_FRAMES = [8, 12, 16, 24, 32, 48, 64, 96] as const;
+/** Wrong bonds per tracer that still leave lines apart. */
+const WRONG_BONDS_MAX = 0.05;
+
+/** Which tracers move as one line. */
+export interface LineGroups {
+  /** Number of the line of a trapped track, -1 for the others. */
+  line: Int32Array;
+  lines: number;
+  /** Pairs in reach long enough to tell, and the reach, px. */
+  pairs: PairMotion[];
+  reachPx: number;
+  /** Pairs in reach that are too short or too still to tell. */
+  untold: PairMotion[];
+  /** Chance that two independent tracks keep their separation. */
+  wrongChance: number;
+  /** Frames that two tracks must share to be told apart or joined. */
+  leastFrames: number;
+  /** False where wrong bonds would join everything; then every track is a line of its own. */
+  told: boolean;
+}
+
+/** Joins trapped tracers that keep their separation while both move: they sit on one line. */
+export function lineGroups(
+  tracks: Tracks,
+  pool: TrappedPool,
+  image: { width: number; height: number; frames: number },
+): LineGroups {
+  const typicalPx = Math.sqrt((image.width * image.height) / Math.max(1, pool.perFrame));
+  const reachPx = Math.min(
+    REACH_DISTANCES * typicalPx,
+    REACH_IMAGE_PART * Math.min(image.width, image.height),
+  );
+  const seen = new Set<number>();
+  const motions: PairMotion[] = [];
+  if (pool.tracks > 1) {
+    for (const { trackA, trackB } of closePairs(tracks, pool.chosen, image, reachPx)) {
+      const key = trackA * tracks.count + trackB;
+      if (seen.has(key)) continue;
+      seen.add(key);
+      const motion = pairMotion(tracks, trackA, trackB, pool.driftPx);
+      if (motion) motions.push(motion);
+    }
+  }
+  let pairs: PairMotion[] = [];
+  let wrongChance = 1;
+  let told = false;
+  let leastFrames: number = LEAST_FRAMES[0];
+  for (const least of LEAST_FRAMES) {
+    leastFrames = least;
+    pairs = motions.filter((m) => m.telling && m.measured >= least);
+    if (pairs.length === 0) break;
+    wrongChance = pairs.filter((m) => m.rigidWhenTurned).length / pairs.length;
+    // Bonds of a tracer at a time: pairs count for the frames they share.
+    const bonds = (2 * pairs.reduce((sum, m) => sum + m.common, 0)) / (pool.perFrame * image.frames);
+    told = wrongChance * bonds <= WRONG_BONDS_MAX;
+    if (told) break;
+  }
+  const parent = Int32Array.from({ length: tracks.count }, (_, i) => i);
+  const root = (i: number): number => {
+    while (parent[i] !== i) i = parent[i] = parent[parent[i]];
+    return i;
+  };
+  if (told) {
+    for (const { rigid, trackA, trackB } of pairs) if (rigid) parent[root(trackB)] = root(trackA);
+  }
+  const line = new Int32Array(tracks.count).fill(-1);
+  const names = new Map<number, number>();
+  for (let i = 0; i < tracks.count; i++) {
+    if (pool.chosen[i] !== 1) continue;
+    const of = root(i);
+    if (!names.has(of)) names.set(of, names.size);
+    line[i] = names.get(of) ?? -1;
+  }
+  const tells = new Set(pairs);
+  const untold = motions.filter((m) => !tells.has(m));
+  return {
+    line,
+    lines: names.size,
+    pairs: told ? pairs : [],
+    untold,
+    reachPx,
+    wrongChance,
+    leastFrames,
+    told,
+  };
+}

@@ -1,0 +1,84 @@
+import { createRandom, mixSeed } from '../random';
+import { ANISOTROPY_ERROR, THICKNESS_ERROR, type EstimateContext } from './context';
+import { lnSpread, notUsable, type DensityResult } from './interval';
+import { nearestLines } from './nearest-lines';
+import { resampleLines } from './resample-lines';
+import { decoratedShare } from './sheet-geometry';
+import { lineDensityFromNeighbourDistance, neighbourDistance } from './stereology';
+
+/** Above this part of the spacing the thickness of the sheet matters more than a correction can mend. */
+const THIN_PART = 0.3;
+/** Added to ln L's error when the sheet is thicker than that. */
+const THICK_ERROR = 0.15;
+
+/**
+ * L = 1 / (2 <r>^2) from the distance between neighbouring lines, one tracer standing for each,
+ * over the share of lines that carry a tracer at all. The distance is that of points of the same
+ * number per area; edges are cut off, not corrected.
+ */
+export function neighbourDistanceEstimate(context: EstimateContext): DensityResult {
+  const method = 'neighbour-distance';
+  const { tracks, pool, groups, fellows, image, conditions, recipe } = context;
+  const h = conditions.sheetThickness_m;
+  if (!groups.told) {
+    return notUsable(
+      method,
+      'The trapped tracks are too short or too still to tell which of them share a line.',
+    );
+  }
+  const nearest = nearestLines(tracks, pool, groups, image, conditions.pixelSize_m);
+  const total = (of: Float64Array) => of.reduce((a, b) => a + b, 0);
+  const perAreaM2 = total(nearest.ended) / total(nearest.areaM2);
+  if (!(perAreaM2 > 0))
+    return notUsable(method, 'Too few lines are seen at once to measure distances between them.');
+  const distanceM = neighbourDistance(perAreaM2);
+  const seenM2 = lineDensityFromNeighbourDistance(distanceM);
+  const inputs = {
+    meanNeighbourDistance: { value: distanceM, unit: 'm' },
+    linesPerFrame: { value: nearest.linesPerFrame, unit: '' },
+    sheetThickness: { value: h ?? null, unit: 'm' },
+  };
+  if (!h) {
+    const note =
+      'The thickness of the light sheet is not given, so lines without tracers can’t be counted; low is the lower limit.';
+    return notUsable(method, note, inputs, seenM2);
+  }
+  if (!fellows) {
+    const note =
+      'Hardly any two tracers share a line, so the share of lines without tracers is unknown; low is the lower limit.';
+    return notUsable(method, note, inputs, seenM2);
+  }
+  const usedPerLengthM = fellows.tracersPerLengthM * nearest.usedShare;
+  const share = decoratedShare(usedPerLengthM * h);
+  const valueM2 = seenM2 / share;
+  const filled = { ...inputs, decoratedShare: { value: share, unit: '' } };
+  const part = h * Math.sqrt(valueM2);
+  if (part > 1) {
+    const note = `The light sheet is ${part.toFixed(1)} times as thick as the lines are apart: distances in its projection say nothing.`;
+    return notUsable(method, note, filled);
+  }
+  const random = createRandom(mixSeed(recipe.seed, 42));
+  const sums = [nearest.ended, nearest.areaM2, context.tracersByLine, fellows.pairsByLine];
+  const tracersNow = total(context.tracersByLine);
+  const pairsNow = total(fellows.pairsByLine);
+  const draws = resampleLines(
+    random,
+    groups.lines,
+    sums,
+    recipe.bootstrapDraws,
+    ([ended, area, n, pairs]) => {
+      const factor = pairs / pairsNow / (n / tracersNow);
+      return ended / area / decoratedShare(usedPerLengthM * factor * h);
+    },
+  );
+  const thicker = decoratedShare(usedPerLengthM * h * (1 + THICKNESS_ERROR));
+  const thick = part > THIN_PART;
+  return {
+    method,
+    valueM2,
+    statistical: lnSpread(draws),
+    systematic: Math.hypot(ANISOTROPY_ERROR, Math.log(thicker / share), thick ? THICK_ERROR : 0),
+    inputs: filled,
+    note: `Distance between neighbouring lines, lines without tracers added (${Math.round(100 * share)} % carry one)${thick ? '; the sheet is not thin against the spacing' : ''}.`,
+  };
+}
