@@ -1,0 +1,30 @@
+import type { Metadata } from 'next';
+import { hashInvitation } from '@/auth/invitations';
+import { InvitationForm } from '@/components/invitation/invitation-form';
+import { PlainPage } from '@/components/shell/plain-page';
+import { findInvited } from '@/models/queries/passwords';
+import { acceptInvitation } from './actions';
+
+export const metadata: Metadata = { title: 'Invitation' };
+
+export default async function InvitationPage({ params }: { params: Promise<{ token: string }> }) {
+  const { token } = await params;
+  const invited = await findInvited(hashInvitation(token));
+  if (!invited) {
+    return (
+      <PlainPage title="This invitation is not open">
+        <p>
+          It was used already, or its week is over. Ask your laboratory&rsquo;s administrator for a new one.
+        </p>
+      </PlainPage>
+    );
+  }
+  return (
+    <PlainPage title={`Welcome, ${invited.name}`}>
+      <p>
+        Choose the password for {invited.email}. Long is good; a few words that belong together only for you.
+      </p>
+      <InvitationForm email={invited.email} accept={acceptInvitation.bind(null, token)} />
+    </PlainPage>
+  );
+}
