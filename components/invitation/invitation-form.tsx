@@ -1,6 +1,7 @@
 'use client';
 
 import { signIn } from 'next-auth/react';
+import { useRouter } from 'next/navigation';
 import { useState, type FormEvent } from 'react';
 import { Button } from '@/components/ui/button';
 import { Field } from '@/components/ui/field';
@@ -16,6 +17,7 @@ export function InvitationForm({
   email: string;
   accept: (password: string) => Promise<AcceptResult>;
 }) {
+  const router = useRouter();
   const [password, setPassword] = useState('');
   const [problem, setProblem] = useState<string | null>(null);
   const [busy, setBusy] = useState(false);
@@ -31,7 +33,8 @@ export function InvitationForm({
         return;
       }
       await signIn('credentials', { email, password, redirect: false });
-      window.location.assign('/');
+      router.push('/');
+      router.refresh();
     } catch {
       setProblem('The link to the server was lost. Try again.');
     } finally {

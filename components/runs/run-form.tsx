@@ -1,6 +1,7 @@
 'use client';
 
-import { useMemo, useState, type FormEvent } from 'react';
+import { useRouter } from 'next/navigation';
+import { useMemo, useState, type FormEvent, type ReactNode } from 'react';
 import { Button } from '@/components/ui/button';
 import { Checkbox } from '@/components/ui/choice';
 import { Field, TextArea } from '@/components/ui/field';
@@ -15,7 +16,6 @@ import { runCreateSchema, type RunCreate } from '@/lib/schemas/run';
 import { suspiciousConditions } from '@/lib/suspicious-conditions';
 import { splitTags } from '@/lib/tags';
 import { deriveRun } from '@/tracking/flow/derive-run';
-import type { ReactNode } from 'react';
 import { ConditionsFields } from './conditions-fields';
 import { DerivedPanel } from './derived-panel';
 import { RunNotes } from './run-notes';
@@ -42,6 +42,7 @@ interface RunFormProps {
 /** Conditions of a run with their units, and what follows from them, beside each other. */
 export function RunForm(props: RunFormProps) {
   const notify = useNotice();
+  const router = useRouter();
   const [form, setForm] = useState<Typed>(() => runForm(props.conditions));
   const [name, setName] = useState(props.name);
   const [notes, setNotes] = useState(props.notes);
@@ -101,7 +102,8 @@ export function RunForm(props: RunFormProps) {
         return;
       }
       if (result.href) {
-        window.location.assign(result.href);
+        router.push(result.href);
+        router.refresh();
         return;
       }
       setRevision(result.revision);
