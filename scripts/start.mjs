@@ -110,7 +110,9 @@ async function bringUp(settings, supervisor, isStopping) {
     const children = superviseWebAndWorkers(supervisor, { port, workers, env });
     const explain = () =>
       children.map(({ name, log }) => `--- ${log.path} (${name})\n${log.tail(10)}`).join('\n');
-    await waitForHealth(url, { within_ms: HEALTHY_WITHIN_MS, isStopping, explain });
+    // Without workers of its own a start can't wait for those of another machine.
+    const good = workers === 0 ? [200, 503] : [200];
+    await waitForHealth(url, { within_ms: HEALTHY_WITHIN_MS, good, isStopping, explain });
   });
   if (isStopping()) return;
   say.line(`Logs: ${join(data, 'logs')}`);

@@ -13,7 +13,7 @@ export async function ensureChromium(say) {
   const find = () => NAMES.map(findProgram).find((path) => path !== null);
   const found = find();
   if (found) return found;
-  await installDebianPackage('chromium', { what: 'Chromium, which the browser tests drive', say });
+  await installDebianPackage('chromium', { what: 'the browser Chromium', say });
   const installed = find();
   if (!installed) throw new PlainStop('The package chromium is installed, but its program was not found.');
   return installed;

@@ -13,7 +13,7 @@ export async function installDebianPackage(name, { what, say }) {
   const aptGet = findProgram('apt-get');
   if (!isRoot() || !aptGet)
     throw new PlainStop(
-      `${what} is not installed and this user may not install it: ` +
+      `${what[0].toUpperCase()}${what.slice(1)} is not installed and this user may not install it: ` +
         `ask an administrator for the package \`${name}\` (apt-get install ${name}).`,
     );
   await say.step(`Installing ${what} (Debian's package ${name})`, async () => {

@@ -41,7 +41,7 @@ export async function ensurePostgres(say, dataFolder) {
     );
   }
   if (process.getuid?.() === 0) refuseDefaultCluster();
-  await installDebianPackage('postgresql', { what: 'The PostgreSQL server', say });
+  await installDebianPackage('postgresql', { what: 'the PostgreSQL server', say });
   const installed = findPostgres();
   if (!installed)
     throw new PlainStop('The package postgresql is installed, but its programs were not found.');
