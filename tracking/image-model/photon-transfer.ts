@@ -4,9 +4,13 @@ import type { QuietPixels } from './quiet-pixels';
 
 /** Above this relative standard error the slope of variance against level says nothing of the gain. */
 const SLOPE_ERROR_MOST = 0.15;
+/** Read noise of a usual scientific camera, electrons, where the recording can't tell it from the gain. */
+const READ_NOISE_USUAL_E = 1.5;
 /** A block needs this many pairs of quiet pixels to count. */
 const PAIRS_LEAST = 30;
 const OUTLIER_SIGMAS = 4;
+/** A third moment below this many standard errors is none. */
+const THIRD_ERRORS_LEAST = 8;
 
 /** What turns camera counts into photoelectrons. */
 export interface CameraNoise {
@@ -30,8 +34,9 @@ interface NoiseBlocks {
  * symmetric read noise doesn't. However they are parted, the noise that detection works with,
  * background + readNoise^2, is the same.
  *
- * Where the background is lit so evenly that the line has no slope to speak of, the gain is only
- * guessed, from the darkest counts; give it in the recipe then.
+ * Where the background is lit so evenly that the line has no slope to speak of, gain follows from
+ * variance and third moment under the assumption of a usual read noise; better give it in the
+ * recipe then.
  */
 export function measureCameraNoise(
   frames: readonly Frame[],
@@ -44,15 +49,21 @@ export function measureCameraNoise(
   const variance = Math.max(1e-12, mean(blocks.variance, blocks.pairs));
   const darkest = Math.min(...blocks.level);
   const givenGain = typeof request.gain === 'number' ? request.gain : undefined;
-  const gain = givenGain ?? lineSlope(blocks) ?? guessGain(frames, level, variance);
+  const { third, samples } = thirdMoment(frames, quietPixels);
+  const givenNoise = typeof request.readNoise_e === 'number' ? request.readNoise_e : undefined;
+  const gain =
+    givenGain ??
+    lineSlope(blocks) ??
+    gainOfMoments(variance, third, samples, givenNoise ?? READ_NOISE_USUAL_E) ??
+    guessGain(frames, level, variance);
   const end = level - variance / gain;
   let offset: number;
   let readNoise: number;
-  if (typeof request.readNoise_e === 'number') {
-    readNoise = request.readNoise_e;
+  if (givenNoise !== undefined) {
+    readNoise = givenNoise;
     offset = end + gain * readNoise * readNoise;
   } else {
-    const photons = thirdMoment(frames, quietPixels) / gain ** 3;
+    const photons = third / gain ** 3;
     offset = Math.min(Math.max(level - gain * photons, end), Math.max(end, darkest));
     readNoise = Math.sqrt(Math.max(0, offset - end) / gain);
   }
@@ -159,6 +170,31 @@ function lineSlope({ level, variance, pairs }: NoiseBlocks): number | undefined 
   return slope > 0 && error < SLOPE_ERROR_MOST * slope ? slope : undefined;
 }
 
+/**
+ * Gain that makes both moments of an evenly lit background: variance = g^2 (m + r^2), third = g^3 m
+ * for m photoelectrons. Of the two solutions the one in which photons outweigh read noise.
+ */
+function gainOfMoments(
+  variance: number,
+  third: number,
+  samples: number,
+  readNoiseE: number,
+): number | undefined {
+  // The third moment of n normal values has the standard error sqrt(15 / n) variance^(3/2).
+  if (!(third > THIRD_ERRORS_LEAST * Math.sqrt(15 / samples) * variance ** 1.5)) return undefined;
+  const excess = (g: number) => variance / g ** 2 - third / g ** 3 - readNoiseE ** 2;
+  let low = third / variance;
+  let high = 1.5 * low;
+  if (excess(high) <= 0) return high;
+  for (let i = 0; i < 60; i++) {
+    const middle = 0.5 * (low + high);
+    if (excess(middle) < 0) low = middle;
+    else high = middle;
+  }
+  return 0.5 * (low + high);
+}
+
+/** Without any sign of photons: as if the darkest count were no light. */
 function guessGain(frames: readonly Frame[], level: number, variance: number): number {
   let lowest = Infinity;
   for (const { counts } of frames) for (const value of counts) if (value < lowest) lowest = value;
@@ -167,7 +203,7 @@ function guessGain(frames: readonly Frame[], level: number, variance: number): n
 }
 
 /** Mean third power of quiet pixels about the background's level, counts^3. */
-function thirdMoment(frames: readonly Frame[], { grid, quiet, level }: QuietPixels): number {
+function thirdMoment(frames: readonly Frame[], { grid, quiet, level }: QuietPixels) {
   let total = 0;
   let count = 0;
   const pixels = grid.width * grid.height;
@@ -189,7 +225,7 @@ function thirdMoment(frames: readonly Frame[], { grid, quiet, level }: QuietPixe
     }
     count += seen;
   }
-  return count > 0 ? total / count : 0;
+  return { third: count > 0 ? total / count : 0, samples: count };
 }
 
 function mean(values: readonly number[], weights: readonly number[]): number {
