@@ -9,7 +9,7 @@ const REACH_IMAGE_PART = 0.25;
 /** Lengths of common tracks tried, frames: longer ones tell better but are fewer. */
 const LEAST_FRAMES = [8, 12, 16, 24, 32, 48, 64, 96] as const;
 /** Wrong bonds per tracer that still leave lines apart. */
-const WRONG_BONDS_MAX = 0.05;
+const WRONG_BONDS_MAX = 0.02;
 
 /** Which tracers move as one line. */
 export interface LineGroups {
