@@ -10,8 +10,7 @@ export interface Change {
   ifMatch: number[] | null;
 }
 
-const TABLES = ['campaigns', 'runs', 'recordings', 'memberships'] as const;
-type Table = (typeof TABLES)[number];
+type Table = 'campaigns' | 'runs' | 'recordings' | 'memberships';
 
 /**
  * Writes columns of a row if it still has the revision that the change starts from, in one

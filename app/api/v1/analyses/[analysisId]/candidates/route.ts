@@ -1,0 +1,10 @@
+import { listCandidates } from '@/models/queries/list-candidates';
+import { memberRoute, methods } from '@/app/api/member-route';
+
+export const dynamic = 'force-dynamic';
+
+export const { GET, POST, PUT, PATCH, DELETE } = methods({
+  GET: memberRoute('GET /analyses/{analysisId}/candidates', ({ viewer, params, query }) =>
+    listCandidates(viewer.labId, params.analysisId, query),
+  ),
+});

@@ -1,0 +1,8 @@
+import { listAnalyses } from '@/models/queries/analyses';
+import { memberRoute, methods } from '@/app/api/member-route';
+
+export const dynamic = 'force-dynamic';
+
+export const { GET, POST, PUT, PATCH, DELETE } = methods({
+  GET: memberRoute('GET /analyses', ({ viewer, query }) => listAnalyses(viewer.labId, query)),
+});
