@@ -6,13 +6,15 @@ export interface ChartTable {
 
 const quoted = (text: string) => (/[",\r\n]/.test(text) ? `"${text.replaceAll('"', '""')}"` : text);
 
-/** CSV by RFC 4180 with a header row, point decimals, full precision, empty for unknown. */
+/** CSV by RFC 4180 with a header row, point decimals, twelve digits, empty for unknown. */
 export function chartCsv({ columns, rows }: ChartTable): string {
   const head = columns.map(({ name, unit }) => quoted(unit ? `${name} (${unit})` : name));
   const body = rows.map((row) =>
-    row.map((cell) =>
-      cell === null || (typeof cell === 'number' && !Number.isFinite(cell)) ? '' : quoted(String(cell)),
-    ),
+    row.map((cell) => {
+      if (typeof cell === 'string') return quoted(cell);
+      // Twelve digits hold every measured value, without the dust of a unit's conversion.
+      return cell === null || !Number.isFinite(cell) ? '' : String(Number(cell.toPrecision(12)));
+    }),
   );
   return [head, ...body].map((row) => `${row.join(',')}\r\n`).join('');
 }

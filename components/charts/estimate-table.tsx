@@ -67,7 +67,7 @@ export function EstimateTable({ label, symbol, displayUnit, rows }: EstimateTabl
         {rows.map((row) => (
           <Row key={row.key} total={row.combined}>
             <Cell head>
-              <span className={`hand:whitespace-nowrap ${row.combined ? 'font-strong' : ''}`}>
+              <span className={`desk:whitespace-nowrap ${row.combined ? 'font-strong' : ''}`}>
                 {row.method}
               </span>
               {row.from || row.note ? (

@@ -196,6 +196,7 @@ interface LabelMarkProps {
 
 /** Width of a letter of 13 px on average, to keep words inside the plot. */
 const LETTER_PX = 6.2;
+const NOTE_LETTER_PX = 5.6;
 
 /** Words beside the data with a 1 px leader, kept inside the plot. */
 export function LabelMark({ x, y, dxPx, dyPx, words, note }: LabelMarkProps) {
@@ -206,7 +207,7 @@ export function LabelMark({ x, y, dxPx, dyPx, words, note }: LabelMarkProps) {
   if (!Number.isFinite(atY)) return null;
   const leftwards = dxPx < 0;
   const roomPx = leftwards ? atX + dxPx - plot.left : plot.right - atX - dxPx;
-  const shownNote = note && note.length * LETTER_PX <= roomPx ? note : null;
+  const shownNote = note && note.length * NOTE_LETTER_PX <= roomPx ? note : null;
   const widthPx = words.length * LETTER_PX;
   const textX = leftwards
     ? Math.max(plot.left + 4 + widthPx, atX + dxPx)

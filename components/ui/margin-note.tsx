@@ -38,7 +38,7 @@ export function MarginNote({ title, tone = 'plain', children, tie, repeatedAtRow
   );
 }
 
-/** The words of a tied note under their row, only where the margin isn't beside it. */
+/** The words of a tied note under their row (`QuantityRow note={...}`), only where the margin isn't beside it. */
 export function RowNote({
   title,
   tone = 'warning',

@@ -2,6 +2,7 @@ import Link from 'next/link';
 import type { ComponentPropsWithoutRef, ReactNode } from 'react';
 import { Chevron } from './choice';
 import { Unit } from './quantity';
+import { ScrollBox } from './scroll-box';
 
 /** Hides a column below 640 px; its values go into `NarrowMore` of the row. */
 const narrowClasses = (narrow: 'hide' | undefined) => (narrow === 'hide' ? 'max-hand:hidden' : '');
@@ -16,7 +17,7 @@ interface TableProps extends ComponentPropsWithoutRef<'table'> {
 /** A ruled table; scrolls sideways inside itself rather than pushing the page. */
 export function Table({ label, density = 'normal', className = '', children, ...rest }: TableProps) {
   return (
-    <div className="max-w-full overflow-x-auto">
+    <ScrollBox label={label}>
       <table
         aria-label={label}
         className={`w-full border-collapse ${density === 'dense' ? 'text-note [&_td]:py-[2px] [&_th]:pr-3 [&_td]:pr-3' : ''} ${className}`}
@@ -24,7 +25,7 @@ export function Table({ label, density = 'normal', className = '', children, ...
       >
         {children}
       </table>
-    </div>
+    </ScrollBox>
   );
 }
 
