@@ -28,6 +28,8 @@ const LEVEL_MARGIN = 0.7;
 const LEVEL_SURE = 2.5;
 /** Pixels around a spot in which the second look can find another. */
 const SECOND_LOOK_PIXELS_SIGMAS2 = 40;
+/** With few spots the second look is as strict as if it looked at this share of the image. */
+const SECOND_LOOK_SHARE = 0.1;
 /** How far the background near a spot may differ from the model: a share of it and a floor, electrons. */
 const OFFSET_SHARE = 0.1;
 const OFFSET_LEAST_E = 0.5;
@@ -155,7 +157,10 @@ export function createDetector(model: ImageModel, recipe: Recipe): Detector {
     const lookLevel = levelForFalseMaxima(
       recipe.falseSpotsPerFrame,
       sigma,
-      Math.min(pixels, 1 + found * SECOND_LOOK_PIXELS_SIGMAS2 * sigma * sigma),
+      Math.min(
+        pixels,
+        Math.max(SECOND_LOOK_SHARE * pixels, found * SECOND_LOOK_PIXELS_SIGMAS2 * sigma * sigma),
+      ),
     );
     const gainLeast = lookLevel * lookLevel;
     const byResponse = sortOrder((a, b) => table.response[b] - table.response[a] || a - b);
