@@ -25,7 +25,7 @@ module.exports = {
       { path: '^tracking/' },
       {
         dependencyTypes: ['core', 'npm', 'npm-dev', 'npm-optional', 'npm-peer', 'npm-no-pkg', 'unknown'],
-        pathNot: 'node_modules/(ml-|kd-tree-javascript)',
+        pathNot: '(^|node_modules/)(ml-|kd-tree-javascript)',
       },
     ),
     rule(

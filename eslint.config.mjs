@@ -6,7 +6,7 @@ const clientOnlyInComponents = {
   message: "'use client' lives in components/ (and in error.tsx) so that one rule sees every browser file.",
 };
 
-export default [
+const config = [
   { ignores: ['.next/**', 'dist/**', '.beadline/**', 'next-env.d.ts', '.dependency-cruiser.cjs'] },
   ...nextVitals,
   ...nextTs,
@@ -48,3 +48,5 @@ export default [
     },
   },
 ];
+
+export default config;
