@@ -1,11 +1,11 @@
-import { Jimp, loadFont, ResizeStrategy } from 'jimp';
+import { Jimp, loadFont } from 'jimp';
 import { SANS_16_WHITE } from 'jimp/fonts';
 import { rename, rm, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
 import { spreadFrames } from '@/tracking/image-quality/spread-frames';
+import { greyImage } from './grey-image';
 import { type StackReader } from './open-stack';
 import { scaleBar } from './scale-bar';
-import { stretchToBytes } from './stretch';
 
 /** Name of the strip in a stack's folder. */
 export const STRIP_FILE = 'strip.png';
@@ -27,6 +27,11 @@ export interface StripOptions {
   frameIntervalS?: number | null;
 }
 
+interface TileSize {
+  width: number;
+  height: number;
+}
+
 /** `frame 120, 1.20 s`, frames from 0 as in all tables. */
 export function caption(frame: number, frameIntervalS: number | null | undefined): string {
   if (!frameIntervalS) return `frame ${frame}`;
@@ -34,14 +39,15 @@ export function caption(frame: number, frameIntervalS: number | null | undefined
   return `frame ${frame}, ${seconds.toFixed(seconds < 10 ? 3 : 1)} s`;
 }
 
-async function tile(reader: StackReader, frame: number, { low, high }: StripOptions) {
-  const { width, height, counts } = await reader.readFrame(frame);
-  const grey = stretchToBytes(counts, low, high);
-  const rgba = Buffer.alloc(grey.length * 4, 255);
-  grey.forEach((value, i) => rgba.fill(value, i * 4, i * 4 + 3));
-  const scale = TILE_PX / Math.max(width, height);
-  const size = { w: Math.max(1, Math.round(width * scale)), h: Math.max(1, Math.round(height * scale)) };
-  return new Jimp({ width, height, data: rgba }).resize({ ...size, mode: ResizeStrategy.BILINEAR });
+async function tile(reader: StackReader, frame: number, { low, high }: StripOptions, size: TileSize) {
+  const image = greyImage(await reader.readFrame(frame), low, high);
+  const { data } = await image
+    .resize({ ...size, fit: 'fill' })
+    .toColourspace('srgb')
+    .ensureAlpha()
+    .raw()
+    .toBuffer({ resolveWithObject: true });
+  return new Jimp({ ...size, data });
 }
 
 function drawBar(strip: InstanceType<typeof Jimp>, x: number, y: number, lengthPx: number): void {
@@ -53,30 +59,29 @@ function drawBar(strip: InstanceType<typeof Jimp>, x: number, y: number, lengthP
 export async function makeContactStrip(reader: StackReader, options: StripOptions): Promise<Buffer> {
   const frames = spreadFrames(reader.frames, FRAMES);
   const scale = TILE_PX / Math.max(reader.width, reader.height);
-  const [tileWidth, tileHeight] = [reader.width, reader.height].map((px) =>
-    Math.max(1, Math.round(px * scale)),
-  );
-  const step = Math.max(tileWidth!, TILE_PX) + GAP_PX;
+  const [width, height] = [reader.width, reader.height].map((px) => Math.max(1, Math.round(px * scale)));
+  const size: TileSize = { width: width!, height: height! };
+  const step = Math.max(size.width, TILE_PX) + GAP_PX;
   const strip = new Jimp({
     width: frames.length * step + GAP_PX,
-    height: tileHeight! + CAPTION_PX + 2 * GAP_PX,
+    height: size.height + CAPTION_PX + 2 * GAP_PX,
     color: GROUND,
   });
   const font = await loadFont(SANS_16_WHITE);
   for (const [i, frame] of frames.entries()) {
     const x = GAP_PX + i * step;
-    strip.composite(await tile(reader, frame, options), x, GAP_PX);
+    strip.composite(await tile(reader, frame, options, size), x, GAP_PX);
     strip.print({
       font,
       x: x + 2,
-      y: tileHeight! + GAP_PX + 3,
+      y: size.height + GAP_PX + 3,
       text: caption(frame, options.frameIntervalS),
     });
   }
   if (options.pixelSizeM) {
-    const bar = scaleBar(options.pixelSizeM / scale, tileWidth! / 2);
-    drawBar(strip, 2 * GAP_PX, tileHeight! - 2 * GAP_PX, bar.lengthPx);
-    strip.print({ font, x: 2 * GAP_PX, y: tileHeight! - 2 * GAP_PX - 22, text: bar.label });
+    const bar = scaleBar(options.pixelSizeM / scale, size.width / 2);
+    drawBar(strip, 2 * GAP_PX, size.height - 2 * GAP_PX, bar.lengthPx);
+    strip.print({ font, x: 2 * GAP_PX, y: size.height - 2 * GAP_PX - 22, text: bar.label });
   }
   return strip.getBuffer('image/png');
 }

@@ -67,6 +67,9 @@ export class IndexBuilder {
   private layoutNumber(layout: FrameLayout): number {
     const text = JSON.stringify(layout);
     const known = this.layouts.get(text) ?? this.layouts.size;
+    if (known >= STACK_LIMITS.layouts) {
+      throw new StackRefusal('MIXED_LAYOUT', 'The pages are stored in more than 1,000 different ways.');
+    }
     this.layouts.set(text, known);
     return known;
   }

@@ -7,7 +7,8 @@ import { prepareStack } from './prepare-stack';
  * Judges whether a file, or the files of a folder, are a stack of camera frames. Every page is read
  * once. A good stack leaves `index.bin` in `outDir` for `openStack`; anything else leaves nothing.
  * @param source paths inside `outDir` are kept relative to it, so the folder can be moved as a whole
- * @throws the signal's reason when it aborts, and errors of the disk; never because of a file's content.
+ * @throws RangeError for options out of range, the signal's reason when it aborts, and errors of the disk;
+ *   never because of a file's content.
  */
 export async function inspectStack(
   source: StackSource,

@@ -1,4 +1,4 @@
-/** Limits of what is accepted as a stack; each has its sentence in `inspectStack`'s refusals. */
+/** Limits of what is accepted as a stack; each has its sentence among the refusals. */
 export const STACK_LIMITS = {
   pages: 200_000,
   /** 64 megapixels, counted as 8192 x 8192. */
@@ -9,6 +9,8 @@ export const STACK_LIMITS = {
   /** Strips or tiles of a whole stack: 16 bytes each in the index. */
   segments: 16_000_000,
   segmentsPerPage: 1_000_000,
+  /** Different ways in which the pages of one stack may be stored. */
+  layouts: 1_000,
   /** Strips and tiles looked at in all, merged ones too: bounds the time that page lists can take. */
   segmentsWalked: 400_000_000,
   /** Above this many bytes an archive entry may not expand more than `zipRatio`-fold. */

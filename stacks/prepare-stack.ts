@@ -20,6 +20,9 @@ async function collected(
   options: InspectOptions,
 ): Promise<StackCollector> {
   const { channel, usePages = Infinity, onProgress } = options;
+  if (usePages !== Infinity && !(Number.isInteger(usePages) && usePages >= 1)) {
+    throw new RangeError(`usePages must be a whole number from 1. Received ${usePages}.`);
+  }
   const collector = new StackCollector(channel, usePages, (pages) => {
     if (pages % TELL_EVERY === 0) onProgress?.({ stage: 'pages', done: pages, of: 0 });
   });

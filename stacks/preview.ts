@@ -1,11 +1,5 @@
-import sharp from 'sharp';
 import { type Frame } from '@/tracking/types';
-import { STACK_LIMITS } from './limits';
-import { stretchToBytes } from './stretch';
-
-// Frames are asked for once each, by several processes on few cores.
-sharp.cache(false);
-sharp.concurrency(1);
+import { greyImage } from './grey-image';
 
 export interface PreviewOptions {
   /** Count shown as black. */
@@ -26,12 +20,8 @@ const PNG = { compressionLevel: 3 } as const;
  * @returns the encoded file: `image/webp` or `image/png`.
  */
 export async function encodePreview(frame: Frame, options: PreviewOptions): Promise<Buffer> {
-  const { width, height } = frame;
-  const grey = stretchToBytes(frame.counts, options.low, options.high);
-  const image = sharp(grey, {
-    raw: { width, height, channels: 1 },
-    limitInputPixels: STACK_LIMITS.pixelsPerPage,
-  }).toColourspace('b-w');
+  const { width } = frame;
+  const image = greyImage(frame, options.low, options.high);
   const shown = Math.max(1, Math.min(width, Math.round(options.width ?? width)));
   if (shown < width) image.resize({ width: shown });
   return options.format === 'webp' ? image.webp(WEBP).toBuffer() : image.png(PNG).toBuffer();

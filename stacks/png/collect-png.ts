@@ -5,7 +5,10 @@ import { plainLayout } from '../frame-layout';
 import { StackRefusal } from '../refusal';
 import { shownName } from '../sentence';
 import { type PagePlace, type StackCollector } from '../stack-collector';
-import { PNG_HEADER_BYTES, pngChannels, readPngHeader } from './png-header';
+import { PNG_HEADER_BYTES, pngChannels, readPngHeader, storedSamples } from './png-header';
+
+/** Room for profiles and texts: a frame is read as a whole, so its file must not be much larger than it. */
+const OTHER_BYTES_MAX = 16 * 1024 * 1024;
 
 /** The refusal of a PNG frame that can't be decoded. */
 export function corruptPng(name: string): StackRefusal {
@@ -28,6 +31,8 @@ export async function collectPng(
   const channels = pngChannels(header);
   assertFrameSize(width, height, channels);
   if (bits < 8) throw new StackRefusal('SAMPLE_FORMAT', `${bits}-bit samples are not supported.`);
+  const rawBytes = height * (1 + (width * storedSamples(header) * bits) / 8);
+  if (source.sizeBytes > 2 * rawBytes + OTHER_BYTES_MAX) throw corruptPng(name);
   const layout = {
     ...plainLayout(width, height, { bits, sampleKind: 'uint', littleEndian: false }),
     container: 'png' as const,

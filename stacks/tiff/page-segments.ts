@@ -9,6 +9,10 @@ import { type TiffPage } from './read-page';
 import { TAG } from './tiff-tags';
 import { type TiffDirectory, type TiffFile } from './tiff-file';
 
+/** No codec here makes data longer than this: what a strip claims beyond is never read into memory. */
+const CODED_FACTOR_MAX = 2;
+const CODED_EXTRA_BYTES = 64;
+
 function shortPage(page: number, needed: number, held: number): StackRefusal {
   return new StackRefusal(
     'STRIP_SHORT',
@@ -61,7 +65,7 @@ export async function pageSegments(
     const need = chunkBytes(layout, facts.height, Math.floor((i % perPlane) / grid.across));
     // Without sizes, uncompressed data must be as long as the image needs.
     const given = i >= offsets.length ? 0 : (counts[i] ?? (plain && counts.length === 0 ? need : 0));
-    lengths[i] = plain ? Math.min(given, need) : given;
+    lengths[i] = Math.min(given, plain ? need : CODED_FACTOR_MAX * need + CODED_EXTRA_BYTES);
     needed += need;
     held += Math.min(given, need);
     complete &&= plain ? given >= need : given > 0;

@@ -122,3 +122,9 @@ describe('an inspection', () => {
     expect((await refuseBytes({ name: 'a.npy', bytes: Buffer.alloc(0) })).left).toEqual([]);
   });
 });
+
+describe('options out of range', () => {
+  it.each([0, -1, 1.5, NaN])('%s pages are a fault of the caller', async (usePages) => {
+    await expect(readBytes(stack, { usePages })).rejects.toThrow(`Received ${usePages}`);
+  });
+});

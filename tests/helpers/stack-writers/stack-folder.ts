@@ -1,7 +1,7 @@
 import { mkdtemp, readdir, rm, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import { afterAll } from 'vitest';
+import { afterAll, expect } from 'vitest';
 import { inspectStack } from '@/stacks/inspect-stack';
 import { openStack } from '@/stacks/open-stack';
 import {
@@ -43,8 +43,10 @@ export async function inspectBytes(stack: StackBytes, options: InspectOptions = 
   const dir = await stackFolder();
   const source = await written(stack, dir);
   const before = await readdir(dir);
+  const start = performance.now();
   const report = await inspectStack(source, dir, options);
-  return { dir, report, left: (await readdir(dir)).filter((name) => !before.includes(name)) };
+  const tookMs = performance.now() - start;
+  return { dir, report, tookMs, left: (await readdir(dir)).filter((name) => !before.includes(name)) };
 }
 
 /** The report of a stack that must be accepted, with all of its frames read back through the index. */
@@ -58,9 +60,13 @@ export async function readBytes(stack: StackBytes, options: InspectOptions = {})
   return { dir, report: report satisfies ReadyStack, frames };
 }
 
-/** The refusal of a stack that must be refused, and what it left behind. */
+/** Whatever is wrong with a file must be said within this time. */
+const REFUSAL_MS_MAX = 10_000;
+
+/** The refusal of a stack that must be refused, in time, and what it left behind. */
 export async function refuseBytes(stack: StackBytes, options: InspectOptions = {}) {
-  const { report, left } = await inspectBytes(stack, options);
+  const { report, left, tookMs } = await inspectBytes(stack, options);
+  expect(tookMs).toBeLessThan(REFUSAL_MS_MAX);
   if (report.state !== 'refused') throw new Error(`Accepted ${report.frames} frames.`);
   return { ...(report satisfies RefusedStack).refusal, left };
 }

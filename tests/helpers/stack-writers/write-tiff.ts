@@ -30,6 +30,8 @@ export interface TiffValue {
   /** 2 text, 3 SHORT, 4 LONG, 16 LONG8. */
   type: number;
   values: readonly number[] | Buffer;
+  /** A count that differs from the values there. */
+  count?: number;
 }
 
 const short = (...values: number[]): TiffValue => ({ type: 3, values });
@@ -144,7 +146,7 @@ function directoryBytes(fields: [number, TiffValue][], at: number, o: TiffOption
     const bytes = valueBytes(value, littleEndian);
     view.setUint16(from, tag, littleEndian);
     view.setUint16(from + 2, value.type, littleEndian);
-    put(from + 4, bytes.length / SIZES[value.type]!);
+    put(from + 4, value.count ?? bytes.length / SIZES[value.type]!);
     if (bytes.length <= slot) bytes.copy(table, from + 4 + slot);
     else {
       put(from + 4 + slot, outsideAt);
