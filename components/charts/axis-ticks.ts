@@ -53,11 +53,16 @@ function logTicks(min: number, max: number): AxisTicks {
   return { major, minor };
 }
 
+/** Below any value in any unit of this product. */
+const TINY = 1e-200;
+
 /** Round ends around data, a little room left: `paddedRange(0.3, 97)` -> 0 ... 100. */
 export function paddedRange(low: number, high: number, parts = 5): AxisRange {
-  if (!(high > low)) {
-    const half = Math.abs(low) > 0 ? Math.abs(low) / 2 : 1;
-    return paddedRange(low - half, low + half, parts);
+  const size = Math.max(Math.abs(low), Math.abs(high));
+  // A span lost in the rounding of its own ends has no steps to show.
+  if (!(high - low > Math.max(1e-9 * size, TINY))) {
+    const half = size > TINY ? size / 2 : 1;
+    return paddedRange(low - half, high + half, parts);
   }
   const step = roundStep(high - low, parts);
   return { min: tidy(Math.floor(low / step) * step), max: tidy(Math.ceil(high / step) * step) };

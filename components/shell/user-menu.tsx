@@ -68,7 +68,7 @@ export function UserMenu({ viewer, switchLab, places = [], current = null, butto
       });
     }
   }
-  items.push({ kind: 'heading', label: 'Light' });
+  items.push({ kind: 'heading', label: 'Theme' });
   for (const [value, label] of THEMES) {
     items.push({ kind: 'act', label, current: value === shownTheme, onSelect: () => choose(value) });
   }

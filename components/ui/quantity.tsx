@@ -1,4 +1,5 @@
 import { Fragment, type ReactNode } from 'react';
+import { formatCount } from '@/lib/format/count';
 import { formatQuantity, type QuantityInput } from '@/lib/format/quantity';
 import { unitPieces } from '@/lib/format/unit';
 
@@ -11,6 +12,11 @@ export function Unit({ children }: { children: string }) {
       )}
     </>
   );
+}
+
+/** A whole number that doesn't break at its thin spaces. */
+export function Count({ value }: { value: number | null | undefined }) {
+  return <span className="whitespace-nowrap tabular-nums">{formatCount(value)}</span>;
 }
 
 /** A symbol set as in print: letter in italics, a word as upright subscript. `<QuantitySymbol letter="v" sub="ns" />` */
