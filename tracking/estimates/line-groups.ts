@@ -4,8 +4,10 @@ import { pairMotion, type PairMotion } from './pair-motion';
 import type { TrappedPool } from './trapped-pool';
 
 /** Pairs are looked at within this many typical distances of trapped tracers, and a part of the image. */
-const REACH_DISTANCES = 4;
+const REACH_DISTANCES = 3;
 const REACH_IMAGE_PART = 0.25;
+/** Pairs that share enough frames to be told apart are met in one of every so many frames. */
+const LOOK_EVERY = 4;
 /** Lengths of common tracks tried, frames: longer ones tell better but are fewer. */
 const LEAST_FRAMES = [8, 12, 16, 24, 32, 48, 64, 96] as const;
 /** Wrong bonds per tracer that still leave lines apart. */
@@ -43,7 +45,7 @@ export function lineGroups(
   const seen = new Set<number>();
   const motions: PairMotion[] = [];
   if (pool.tracks > 1) {
-    for (const { trackA, trackB } of closePairs(tracks, pool.chosen, image, reachPx)) {
+    for (const { trackA, trackB } of closePairs(tracks, pool.chosen, image, reachPx, LOOK_EVERY)) {
       const key = trackA * tracks.count + trackB;
       if (seen.has(key)) continue;
       seen.add(key);

@@ -19,12 +19,14 @@ const NEW_MEETING_FRAMES = 20;
  *
  * @param chosen 1 for tracks to look at.
  * @param reachPx > 0.
+ * @param everyFrames only every so many frames are looked at.
  */
 export function closePairs(
   tracks: Tracks,
   chosen: Uint8Array,
   image: { width: number; height: number; frames: number },
   reachPx: number,
+  everyFrames = 1,
 ): Meeting[] {
   if (!(reachPx > 0)) throw new RangeError(`reachPx must be > 0. Received ${reachPx}.`);
   const { order, from, track } = pointsByFrame(tracks, chosen, image.frames);
@@ -62,7 +64,7 @@ export function closePairs(
     }
   };
 
-  for (let frame = 0; frame < image.frames; frame++) {
+  for (let frame = 0; frame < image.frames; frame += everyFrames) {
     for (let i = from[frame]; i < from[frame + 1]; i++) {
       const p = order[i];
       const cell = cellOf(p);

@@ -6,7 +6,7 @@ import type { ReconnectionCandidate } from './candidate';
 import { closePairs } from './close-pairs';
 import { describeMeeting } from './describe-meeting';
 import { falseDiscoveryQ } from './false-discovery';
-import { meetingScore } from './judge-meeting';
+import { meetingScore, REDUCED_CHI2_MAX } from './judge-meeting';
 import { expectedByChance } from './expected-by-chance';
 import { fitMeeting } from './meeting-fit';
 import { meetsAndParts, separationAround, SIDE_POINTS_MIN } from './separation';
@@ -22,7 +22,7 @@ export interface FoundCandidates {
  * the square-root law of reconnection and by a straight fly-by; its chance comes from independent
  * tracks laid over each other, and the false discovery rate from all pairs that were tested.
  * Undecided tracks are looked at too, but a pair with one is never accepted. Listed are the pairs
- * that the law describes better than a fly-by.
+ * that the law describes within its errors and better than a fly-by.
  */
 export function findCandidates(
   tracks: Tracks,
@@ -39,7 +39,7 @@ export function findCandidates(
   const tested = closePairs(tracks, chosen, image, reachPx).flatMap((meeting) => {
     const separation = separationAround(tracks, meeting.trackA, meeting.trackB, meeting.frame, pixelM);
     if (!meetsAndParts(separation)) return [];
-    const fit = fitMeeting(separation, dtS);
+    const fit = fitMeeting(separation, dtS, REDUCED_CHI2_MAX);
     return [{ meeting, separation, fit, score: meetingScore(separation, fit) }];
   });
   const expected = expectedByChance(tracks, population, image, conditions, recipe.closestApproach_m);
@@ -52,22 +52,31 @@ export function findCandidates(
   }
   const random = createRandom(mixSeed(recipe.seed, 31));
   const met = new Set(tested.map(({ meeting }) => pairKey(tracks, meeting.trackA, meeting.trackB)));
-  const chance = chanceMeetings(random, tracks, chosen, image.frames, reachPx, conditions, met);
+  const chance = chanceMeetings(
+    random,
+    tracks,
+    chosen,
+    image.frames,
+    reachPx,
+    conditions,
+    met,
+    tested.length,
+  );
   const pChance = tested.map(({ score }) => chanceOf(score, chance));
   const qValue = falseDiscoveryQ(pChance);
   const candidates = tested
     .map((one, i) => ({ ...one, pChance: pChance[i], qValue: qValue[i] }))
-    .filter(({ fit }) => fit.bicGain > 0)
-    .map((one) => {
-      const { trackA, trackB } = one.meeting;
-      const bothTrapped = population[trackA] === TRAPPED && population[trackB] === TRAPPED;
-      return describeMeeting(tracks, one, conditions, recipe.falseDiscoveryRate, bothTrapped);
+    .flatMap(({ meeting, separation, fit, ...chances }) => {
+      if (!fit || !(fit.bicGain > 0 && fit.reducedChi2 < REDUCED_CHI2_MAX)) return [];
+      const bothTrapped = population[meeting.trackA] === TRAPPED && population[meeting.trackB] === TRAPPED;
+      const one = { meeting, separation, fit, ...chances };
+      return [describeMeeting(tracks, one, conditions, recipe.falseDiscoveryRate, bothTrapped)];
     })
     .sort(
       (a, b) => a.t0S - b.t0S || a.yPx - b.yPx || a.xPx - b.xPx || a.trackA - b.trackA || a.trackB - b.trackB,
     );
   const accepted = candidates.filter((candidate) => candidate.accepted).length;
-  const note = `${tested.length} pairs met and parted, ${candidates.length} are described better by the square-root law than by a fly-by, ${accepted} pass every criterion.`;
+  const note = `${tested.length} pairs met and parted, ${candidates.length} fit the square-root law better than a fly-by, ${accepted} pass every criterion.`;
   return {
     candidates,
     summary: {

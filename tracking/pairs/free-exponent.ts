@@ -1,6 +1,7 @@
-import { variance, type MeetingFit } from './meeting-fit';
-import { nonNegativeLeastSquares } from './non-negative-least-squares';
+import type { MeetingFit } from './meeting-fit';
+import { NonNegativeLeastSquares } from './non-negative-least-squares';
 import { SIDE_POINTS_MIN, type Separation } from './separation';
+import { variance } from './timed-fit';
 
 const EXPONENT = { low: 0.1, high: 1.5, step: 0.1 } as const;
 /** Around the best exponent of the grid the step is this much finer, until it resolves the error. */
@@ -40,11 +41,13 @@ export function freeExponent(
   const y = Float64Array.from(square);
   const w = Float64Array.from(weight);
   const rows = new Float64Array(2 * n).fill(1);
+  const solver = new NonNegativeLeastSquares();
   const chi2At = (a: number, t0: number): number => {
     // A meeting inside the points of its side would not be one.
     if (side * (since[0] - t0) <= 0 || side * (since[n - 1] - t0) <= 0) return Infinity;
     for (let i = 0; i < n; i++) rows[2 * i + 1] = Math.abs(since[i] - t0) ** (2 * a);
-    const { x } = nonNegativeLeastSquares(rows, y, w, 2);
+    solver.solve(rows, y, w, n, 2);
+    const { x } = solver;
     let sum = 0;
     for (let i = 0; i < n; i++) sum += w[i] * (y[i] - x[0] - x[1] * rows[2 * i + 1]) ** 2;
     return sum;

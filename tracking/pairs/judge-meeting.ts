@@ -78,7 +78,7 @@ export function failedByExponent(sides: { before: SideFit | null; after: SideFit
  * How much an event speaks for the law: the gain over a fly-by, or -Infinity where the law doesn't
  * hold or an exponent is not 1/2. Observed and chance meetings are ranked by it alike.
  */
-export function meetingScore(s: Separation, fit: MeetingFit): number {
-  if (!(fit.bicGain > 0) || failedByLaw(s, fit).length > 0) return -Infinity;
+export function meetingScore(s: Separation, fit: MeetingFit | null): number {
+  if (!fit || !(fit.bicGain > 0) || failedByLaw(s, fit).length > 0) return -Infinity;
   return failedByExponent(sidesOf(s, fit)).length > 0 ? -Infinity : fit.bicGain;
 }

@@ -2,12 +2,13 @@ import type { Random } from '../random';
 import type { Tracks } from '../types';
 import { pointsByFrame } from './close-pairs';
 import { fitMeeting } from './meeting-fit';
-import { meetingScore } from './judge-meeting';
+import { meetingScore, REDUCED_CHI2_MAX } from './judge-meeting';
 import { meetsAndParts, separationAround } from './separation';
 
-/** Meetings of independent tracks to collect, and tries to spend on them. */
-const WANTED = 1000;
-const TRIES_MAX = 40_000;
+/** Meetings of independent tracks to collect for every one tested, within bounds, and tries for each. */
+const PER_TESTED = 3;
+const WANTED = { least: 1000, most: 6000 } as const;
+const TRIES_PER_WANTED = 30;
 
 /** Scores of chance meetings with the weight of each. */
 export interface ChanceMeetings {
@@ -24,6 +25,7 @@ export interface ChanceMeetings {
  * reach, hence its weight of one over those.
  *
  * @param chosen 1 for tracks to draw from.
+ * @param tested meetings that will be judged by it.
  * @param met keys of pairs that really met: they may be what is looked for, so they are not drawn.
  */
 export function chanceMeetings(
@@ -34,11 +36,13 @@ export function chanceMeetings(
   reachPx: number,
   scale: { pixelSize_m: number; frameInterval_s: number },
   met: ReadonlySet<number>,
+  tested: number,
 ): ChanceMeetings {
   const { order, from, track } = pointsByFrame(tracks, chosen, frames);
+  const wanted = Math.max(WANTED.least, Math.min(WANTED.most, PER_TESTED * tested));
   const score: number[] = [];
   const weight: number[] = [];
-  for (let i = 0; i < TRIES_MAX && score.length < WANTED && order.length > 1; i++) {
+  for (let i = 0; i < TRIES_PER_WANTED * wanted && score.length < wanted && order.length > 1; i++) {
     const p = order[random.integer(order.length)];
     const frame = tracks.frame[p];
     const others = from[frame + 1] - from[frame];
@@ -54,7 +58,7 @@ export function chanceMeetings(
     const near = framesWithin(tracks, track[p], track[q], shift, reachPx);
     const s = separationAround(tracks, track[p], track[q], near.nearestFrame, scale.pixelSize_m, shift);
     if (!meetsAndParts(s)) continue;
-    score.push(meetingScore(s, fitMeeting(s, scale.frameInterval_s)));
+    score.push(meetingScore(s, fitMeeting(s, scale.frameInterval_s, REDUCED_CHI2_MAX)));
     // A frame of n tracks is drawn in proportion to n but has n^2 pairs.
     weight.push(others / near.frames);
   }

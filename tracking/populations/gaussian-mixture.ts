@@ -102,46 +102,40 @@ function maximise(
   isStart: boolean,
 ): boolean {
   const { n, dims } = data;
-  const p = dims + 2;
   const work = new RowWork(dims);
   const precision = inverse(c.covariance, dims);
   if (!precision) return false;
-  const normal = new Float64Array(p * p);
-  const right = new Float64Array(p);
   const latent = new Float64Array(n * dims);
   const spread = new Float64Array(dims * dims);
-  const row = new Float64Array(p);
-  let total = 0;
+  // Sums of weight * coordinate^m, and of weight * coordinate^m * value, m = 0..2, per value.
+  const powers = new Float64Array(2 * QUADRATIC - 1);
+  const moments = new Float64Array(QUADRATIC * dims);
 
   for (let i = 0; i < n; i++) {
     const weight = q[i * k + j];
-    total += weight;
     // At the start there is no component yet to shrink towards, so the values stand for themselves.
     if (isStart) for (let d = 0; d < dims; d++) work.latent[d] = data.value[i * dims + d];
     else work.condition(data, i, c);
-    for (let d = 0; d < dims; d++) latent[i * dims + d] = work.latent[d];
-    if (!isStart) for (let e = 0; e < dims * dims; e++) spread[e] += weight * work.covariance[e];
+    const at = data.coordinate[i];
+    for (let m = 0, w = weight; m < powers.length; m++, w *= at) powers[m] += w;
     for (let d = 0; d < dims; d++) {
-      designRow(row, d, data.coordinate[i]);
-      for (let e = 0; e < dims; e++) {
-        const w = weight * precision[d * dims + e];
-        addDesign(normal, right, row, w, e, data.coordinate[i], work.latent[e], p);
-      }
+      latent[i * dims + d] = work.latent[d];
+      for (let m = 0, w = weight; m < QUADRATIC; m++, w *= at)
+        moments[d * QUADRATIC + m] += w * work.latent[d];
     }
+    if (!isStart) for (let e = 0; e < dims * dims; e++) spread[e] += weight * work.covariance[e];
   }
+  const total = powers[0];
   if (!(total > dims + 2)) return false;
-  for (let a = 0; a < p; a++) normal[a * p + a] += 1e-9 * total;
-  if (Number.isNaN(choleskyInPlace(normal, p))) return false;
-  choleskySolve(normal, p, right);
-  c.beta.set(right);
+  if (!solveMeans(c, dims, precision, powers, moments)) return false;
 
   const mean = new Float64Array(dims);
   for (let i = 0; i < n; i++) {
     const weight = q[i * k + j];
     meanAt(c, data.coordinate[i], dims, mean);
     for (let d = 0; d < dims; d++) {
-      const rd = latent[i * dims + d] - mean[d];
-      for (let e = 0; e < dims; e++) spread[d * dims + e] += weight * rd * (latent[i * dims + e] - mean[e]);
+      const rd = weight * (latent[i * dims + d] - mean[d]);
+      for (let e = 0; e < dims; e++) spread[d * dims + e] += rd * (latent[i * dims + e] - mean[e]);
     }
   }
   for (let e = 0; e < dims * dims; e++) c.covariance[e] = spread[e] / total;
@@ -150,41 +144,34 @@ function maximise(
   return true;
 }
 
-/** Row d of the design: (1, c, c^2) for value 0, a single 1 for the others. */
-function designRow(row: Float64Array, d: number, coordinate: number): void {
-  row.fill(0);
-  if (d === 0) {
-    row[0] = 1;
-    row[1] = coordinate;
-    row[2] = coordinate * coordinate;
-  } else {
-    row[QUADRATIC - 1 + d] = 1;
-  }
-}
-
-/** Adds w * row' row_e to the normal equations and w * row' y to the right side. */
-function addDesign(
-  normal: Float64Array,
-  right: Float64Array,
-  row: Float64Array,
-  w: number,
-  e: number,
-  c: number,
-  y: number,
-  p: number,
-): void {
+/**
+ * Means by generalised least squares: value 0 has the design (1, c, c^2), the others a constant, so
+ * that the normal equations need sums over rows only.
+ */
+function solveMeans(
+  c: Component,
+  dims: number,
+  precision: Float64Array,
+  powers: Float64Array,
+  moments: Float64Array,
+): boolean {
+  const p = dims + 2;
+  const normal = new Float64Array(p * p);
+  const right = new Float64Array(p);
+  // Parameter a belongs to value valueOf(a) and to this power of the coordinate.
+  const valueOf = (a: number) => Math.max(0, a - QUADRATIC + 1);
+  const powerOf = (a: number) => (a < QUADRATIC ? a : 0);
   for (let a = 0; a < p; a++) {
-    if (row[a] === 0) continue;
-    const wa = w * row[a];
-    right[a] += wa * y;
-    if (e === 0) {
-      normal[a * p] += wa;
-      normal[a * p + 1] += wa * c;
-      normal[a * p + 2] += wa * c * c;
-    } else {
-      normal[a * p + QUADRATIC - 1 + e] += wa;
-    }
+    const row = valueOf(a) * dims;
+    for (let b = 0; b < p; b++)
+      normal[a * p + b] = precision[row + valueOf(b)] * powers[powerOf(a) + powerOf(b)];
+    for (let e = 0; e < dims; e++) right[a] += precision[row + e] * moments[e * QUADRATIC + powerOf(a)];
+    normal[a * p + a] += 1e-9 * powers[0];
   }
+  if (Number.isNaN(choleskyInPlace(normal, p))) return false;
+  choleskySolve(normal, p, right);
+  c.beta.set(right);
+  return true;
 }
 
 /** Mean of a component at a coordinate. */

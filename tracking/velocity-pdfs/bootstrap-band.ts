@@ -1,8 +1,8 @@
 import type { Random } from '../random';
 import { sortedQuantile } from '../quantile';
 
-/** Tracks are resampled in this many random packs at most: its own error is then 5 % of the band. */
-export const PACKS_MAX = 200;
+/** Tracks are resampled in this many random packs at most: its own error is then 7 % of the band. */
+export const PACKS_MAX = 100;
 
 /** Zero of n samples still allows 3/n at 95 % (rule of three). */
 const RULE_OF_THREE = 3;

@@ -6,7 +6,7 @@ import {
   reconnectionRate,
 } from '@/tracking/pairs/chance-approaches';
 import { falseDiscoveryQ } from '@/tracking/pairs/false-discovery';
-import { nonNegativeLeastSquares } from '@/tracking/pairs/non-negative-least-squares';
+import { NonNegativeLeastSquares } from '@/tracking/pairs/non-negative-least-squares';
 import { createRandom } from '@/tracking/random';
 import { expectWithin } from '@/tests/helpers/expect-within';
 
@@ -46,7 +46,9 @@ test('non-negative least squares meets the Kuhn-Tucker conditions', () => {
     const rows = Float64Array.from({ length: n * columns }, () => random.normal());
     const y = Float64Array.from({ length: n }, () => random.normal());
     const w = Float64Array.from({ length: n }, () => 0.1 + random.uniform());
-    const { x } = nonNegativeLeastSquares(rows, y, w, columns);
+    const solver = new NonNegativeLeastSquares();
+    solver.solve(rows, y, w, n, columns);
+    const { x } = solver;
     for (let c = 0; c < columns; c++) {
       let gradient = 0;
       for (let i = 0; i < n; i++) {

@@ -100,6 +100,7 @@ test('the law is recovered: times, amplitudes, offset', () => {
   );
   const s = separationAround(tracks, 0, 1, 20, 1e-5);
   const fit = fitMeeting(s, 0.005);
+  if (!fit) throw new Error('no fit');
   expectWithin(20 + fit.law.t0, t0, { abs: 0.15 });
   expectWithin(Math.sqrt(fit.law.coefficients[2]), 0.8, { rel: 0.03 });
   expectWithin(Math.sqrt(fit.law.coefficients[1]), 1.6, { rel: 0.03 });
@@ -124,7 +125,7 @@ test('a straight fly-by is not taken for a reconnection', () => {
       0.1,
     );
     const fit = fitMeeting(separationAround(tracks, 0, 1, 20, 1e-5), 0.005);
-    if (fit.bicGain > 10 && fit.reducedChi2 < 2) taken++;
+    if (fit && fit.bicGain > 10 && fit.reducedChi2 < 2) taken++;
   }
   // 0 of 100 in a simulation of this test before; 3 % is its 95 % bound.
   expect(taken).toBeLessThanOrEqual(3);
