@@ -2,12 +2,15 @@ import { QueryTypes } from 'sequelize';
 import type { TableTrack } from '@/lib/tables/track-rows';
 import type { Tracks } from '@/tracking/types';
 import { getSequelize } from '../database';
-import { queryBinary, withRawClient, type BinaryRow } from '../raw-client';
+import { queryArrays, withRawClient } from '../raw-client';
 import { blockOf, decodePoints, pointCount, type BlockPoints } from './point-blob';
 
 /** Rows of one revision of the tracks: born by then, not ended yet. `$2` is the revision. */
 const valid = (table: string) =>
   `${table}.born_revision <= $2 AND (${table}.ended_revision IS NULL OR ${table}.ended_revision > $2)`;
+
+/** Number of the track, first frame and points of one block, population and probability of the track, block. */
+type PointsRow = [number, number, Buffer, number | null, number | null, number];
 
 /** Tracks of a window of frames. Points of entry `i` are `start[i] .. start[i + 1] - 1`, frame by frame. */
 export interface TrackWindow {
@@ -53,9 +56,9 @@ export async function trackWindow(
   const current = await currentTracksRevision(labId, analysisId);
   if (current === null) return null;
   const rows = await withRawClient((client) =>
-    queryBinary(
+    queryArrays<PointsRow>(
       client,
-      `SELECT p.number, p.first_frame, p.points, t.population, t.p_trapped
+      `SELECT p.number, p.first_frame, p.points, t.population, t.p_trapped, p.block
        FROM track_points p
        JOIN tracks t ON t.analysis_id = p.analysis_id AND t.number = p.number AND ${valid('t')}
        WHERE p.analysis_id = $1 AND p.block BETWEEN $3 AND $4 AND ${valid('p')}
@@ -66,14 +69,12 @@ export async function trackWindow(
   return packWindow(rows, from, to);
 }
 
-function packWindow(rows: readonly BinaryRow[], from: number, to: number): TrackWindow {
+function packWindow(rows: readonly PointsRow[], from: number, to: number): TrackWindow {
   const parts = rows.flatMap((row) => {
-    const firstFrame = row[1]!.readInt32BE(0);
+    const firstFrame = row[1];
     const skip = Math.max(0, from - firstFrame);
-    const end = Math.min(pointCount(row[2]!), to - firstFrame + 1);
-    return end > skip
-      ? [{ row, number: row[0]!.readInt32BE(0), frame: firstFrame + skip, skip, count: end - skip }]
-      : [];
+    const end = Math.min(pointCount(row[2]), to - firstFrame + 1);
+    return end > skip ? [{ row, number: row[0], frame: firstFrame + skip, skip, count: end - skip }] : [];
   });
   const total = parts.reduce((sum, part) => sum + part.count, 0);
   const count = parts.reduce((n, part, i) => n + (i > 0 && parts[i - 1].number === part.number ? 0 : 1), 0);
@@ -95,11 +96,11 @@ function packWindow(rows: readonly BinaryRow[], from: number, to: number): Track
     if (i === 0 || parts[i - 1].number !== number) {
       entry++;
       window.track[entry] = number;
-      window.population[entry] = row[3] ? row[3].readInt16BE(0) : POPULATION_UNKNOWN;
-      window.pTrapped[entry] = row[4] ? row[4].readFloatBE(0) : Number.NaN;
+      window.population[entry] = row[3] ?? POPULATION_UNKNOWN;
+      window.pTrapped[entry] = row[4] ?? Number.NaN;
       window.start[entry] = at;
     }
-    decodePoints(row[2]!, skip, n, points, at);
+    decodePoints(row[2], skip, n, points, at);
     for (let k = 0; k < n; k++) window.frame[at + k] = frame + k;
     at += n;
   });
@@ -133,10 +134,10 @@ export async function* streamTracks(
   revision: number,
 ): AsyncGenerator<TableTrack> {
   let after = { number: -1, block: -1 };
-  let open: BinaryRow[] = [];
+  let open: PointsRow[] = [];
   for (;;) {
     const rows = await withRawClient((client) =>
-      queryBinary(
+      queryArrays<PointsRow>(
         client,
         `SELECT p.number, p.first_frame, p.points, t.population, t.p_trapped, p.block
          FROM (SELECT * FROM track_points p
@@ -149,7 +150,7 @@ export async function* streamTracks(
       ),
     );
     for (const row of rows) {
-      if (open.length > 0 && open[0][0]!.readInt32BE(0) !== row[0]!.readInt32BE(0)) {
+      if (open.length > 0 && open[0][0] !== row[0]) {
         yield trackOf(open);
         open = [];
       }
@@ -157,28 +158,29 @@ export async function* streamTracks(
     }
     const last = rows.at(-1);
     if (!last || rows.length < BATCH) break;
-    after = { number: last[0]!.readInt32BE(0), block: last[5]!.readInt32BE(0) };
+    after = { number: last[0], block: last[5] };
   }
   if (open.length > 0) yield trackOf(open);
 }
 
-function trackOf(rows: readonly BinaryRow[]): TableTrack {
-  const counts = rows.map((row) => pointCount(row[2]!));
+function trackOf(rows: readonly PointsRow[]): TableTrack {
+  const counts = rows.map((row) => pointCount(row[2]));
   const total = counts.reduce((sum, count) => sum + count, 0);
   const points = emptyPoints(total);
-  const firstFrame = rows[0][1]!.readInt32BE(0);
+  const firstFrame = rows[0][1];
   let at = 0;
   rows.forEach((row, i) => {
-    decodePoints(row[2]!, 0, counts[i], points, at);
+    decodePoints(row[2], 0, counts[i], points, at);
     at += counts[i];
   });
   const [number, , , population, pTrapped] = rows[0];
   return {
-    track: number!.readInt32BE(0),
+    track: number,
     frame: Uint32Array.from({ length: total }, (_, i) => firstFrame + i),
     ...points,
-    population: population ? population.readInt16BE(0) : null,
-    pTrapped: pTrapped ? pTrapped.readFloatBE(0) : Number.NaN,
+    population,
+    // The text of a real is its shortest one; this is the very number that was stored.
+    pTrapped: pTrapped === null ? Number.NaN : Math.fround(pTrapped),
   };
 }
 

@@ -1,6 +1,6 @@
 import { QueryTypes, type Transaction } from 'sequelize';
 import { getSequelize } from '../database';
-import { queryBinary, withRawClient } from '../raw-client';
+import { queryArrays, withRawClient } from '../raw-client';
 
 export interface SpotChunk {
   chunk: number;
@@ -39,14 +39,14 @@ export async function saveSpotChunk(
 /** The packed spots of all chunks in order. */
 export async function readSpotChunks(labId: string, analysisId: string): Promise<Uint8Array[]> {
   const rows = await withRawClient((client) =>
-    queryBinary(
+    queryArrays<[Buffer]>(
       client,
       `SELECT c.spots FROM spot_chunks c JOIN analyses a ON a.id = c.analysis_id
        WHERE a.lab_id = $1 AND c.analysis_id = $2 ORDER BY c.chunk`,
       [labId, analysisId],
     ),
   );
-  return rows.map((row) => row[0]!);
+  return rows.map(([spots]) => spots);
 }
 
 /** Spots found in every frame so far, chunk after chunk. */
