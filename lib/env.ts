@@ -1,4 +1,4 @@
-import { join, resolve } from 'node:path';
+import { resolve } from 'node:path';
 
 /** A setting that is missing or can't be right: whoever runs the server can mend it. */
 export class SettingError extends Error {
@@ -29,7 +29,9 @@ export type LimitName = keyof typeof LIMITS;
 export const rootDir = (): string => process.env.BEADLINE_ROOT ?? process.cwd();
 
 /** Data folder, absolute: uploads, stacks, logs and secrets live below it. */
-export const dataDir = (): string => resolve(process.env.BEADLINE_DATA || join(rootDir(), '.beadline'));
+export const dataDir = (): string =>
+  // The build must not take a path that is known only at run time for a wish to ship the whole project.
+  resolve(/* turbopackIgnore: true */ process.env.BEADLINE_DATA || `${rootDir()}/.beadline`);
 
 /** Address of the PostgreSQL database. @throws SettingError when it is not set */
 export const databaseUrl = (): string => needed('DATABASE_URL');

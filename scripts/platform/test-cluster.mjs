@@ -1,4 +1,4 @@
-import { chmodSync, mkdirSync, mkdtempSync, rmSync } from 'node:fs';
+import { chmodSync, mkdtempSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { initCluster, psql, serverCommand, waitForServer } from './cluster.mjs';
@@ -57,11 +57,4 @@ export async function startTestCluster(folder, { say, supervisor }) {
 /** @param {string[]} folders */
 export function removeFolders(folders) {
   for (const folder of folders) rmSync(folder, { recursive: true, force: true });
-}
-
-/** @param {string} folder @param {string} name */
-export function makeFolderIn(folder, name) {
-  const path = join(folder, name);
-  mkdirSync(path, { recursive: true });
-  return path;
 }
