@@ -19,26 +19,44 @@ export interface TiffPage {
   maxSampleValue: number | null;
 }
 
-/** A reader of single numbers, so that a page is described in one place. */
+const PAGE_TAGS = [
+  TAG.imageWidth,
+  TAG.imageLength,
+  TAG.samplesPerPixel,
+  TAG.compression,
+  TAG.photometric,
+  TAG.planarConfiguration,
+  TAG.predictor,
+  TAG.fillOrder,
+  TAG.sampleFormat,
+  TAG.rowsPerStrip,
+  TAG.tileWidth,
+  TAG.tileLength,
+  TAG.maxSampleValue,
+] as const;
+
+/** The single numbers of a page, so that a page is described in one place. */
 async function pageNumbers(file: TiffFile, { fields }: TiffDirectory) {
-  const one = async (tag: number) => {
+  const values = new Map<number, number | undefined>();
+  for (const tag of PAGE_TAGS) {
     const field = fields.get(tag);
-    return field && (await file.readNumbers(field, 1))[0];
-  };
+    // Nearly all stand in the directory: a list of 200,000 pages must not wait for each of them.
+    if (field) values.set(tag, field.first ?? (await file.readNumbers(field, 1))[0]);
+  }
   return {
-    width: await one(TAG.imageWidth),
-    height: await one(TAG.imageLength),
-    samplesPerPixel: (await one(TAG.samplesPerPixel)) ?? 1,
-    compression: (await one(TAG.compression)) ?? COMPRESSION.none,
-    photometric: (await one(TAG.photometric)) ?? 1,
-    planar: (await one(TAG.planarConfiguration)) ?? 1,
-    predictor: (await one(TAG.predictor)) ?? 1,
-    fillOrder: (await one(TAG.fillOrder)) ?? 1,
-    sampleFormat: (await one(TAG.sampleFormat)) ?? 1,
-    rowsPerStrip: (await one(TAG.rowsPerStrip)) || Infinity,
-    tileWidth: await one(TAG.tileWidth),
-    tileLength: await one(TAG.tileLength),
-    maxSampleValue: (await one(TAG.maxSampleValue)) ?? null,
+    width: values.get(TAG.imageWidth),
+    height: values.get(TAG.imageLength),
+    samplesPerPixel: values.get(TAG.samplesPerPixel) ?? 1,
+    compression: values.get(TAG.compression) ?? COMPRESSION.none,
+    photometric: values.get(TAG.photometric) ?? 1,
+    planar: values.get(TAG.planarConfiguration) ?? 1,
+    predictor: values.get(TAG.predictor) ?? 1,
+    fillOrder: values.get(TAG.fillOrder) ?? 1,
+    sampleFormat: values.get(TAG.sampleFormat) ?? 1,
+    rowsPerStrip: values.get(TAG.rowsPerStrip) || Infinity,
+    tileWidth: values.get(TAG.tileWidth),
+    tileLength: values.get(TAG.tileLength),
+    maxSampleValue: values.get(TAG.maxSampleValue) ?? null,
   };
 }
 

@@ -7,6 +7,8 @@ export interface TiffField {
   type: number;
   count: number;
   at: number;
+  /** The first value when it is a whole number that stands in the directory itself, else null. */
+  first: number | null;
 }
 
 export interface TiffDirectory {
@@ -17,6 +19,9 @@ export interface TiffDirectory {
   /** Byte of the next page's directory, 0 after the last page. */
   next: number;
 }
+
+/** BYTE, SHORT, LONG, IFD, and the 64-bit ones. */
+const WHOLE_NUMBERS = new Set([1, 3, 4, 13, 16, 18]);
 
 /** Real pages have a few dozen fields; overlapping lists of very many would take hours to walk. */
 const FIELDS_MAX = 1_000;
@@ -78,17 +83,13 @@ export class TiffFile {
    * @throws OutOfRangeError when they stand outside the file.
    */
   async readNumbers(field: TiffField | undefined, most = Infinity): Promise<Float64Array> {
-    if (!field || ![1, 3, 4, 13, 16, 18].includes(field.type)) return new Float64Array(0);
+    if (!field || !WHOLE_NUMBERS.has(field.type)) return new Float64Array(0);
+    if (field.first !== null && (field.count === 1 || most === 1)) return Float64Array.of(field.first);
     const size = TYPE_BYTES[field.type]!;
     const count = Math.min(field.count, most);
     const view = await this.window.view(field.at, count * size);
     const values = new Float64Array(count);
-    for (let i = 0; i < count; i++) {
-      if (size === 1) values[i] = view.getUint8(i);
-      else if (size === 2) values[i] = view.getUint16(i * 2, this.littleEndian);
-      else if (size === 4) values[i] = view.getUint32(i * 4, this.littleEndian);
-      else values[i] = Number(view.getBigUint64(i * 8, this.littleEndian));
-    }
+    for (let i = 0; i < count; i++) values[i] = this.number(view, i * size, size);
     return values;
   }
 
@@ -110,8 +111,17 @@ export class TiffFile {
       : body.getUint32(at + 4, this.littleEndian);
     const inlineBytes = this.big ? 8 : 4;
     const valueAt = at + 4 + inlineBytes;
-    const inline = count * size <= inlineBytes;
-    return { type, count, at: inline ? fieldOffset + 4 + inlineBytes : this.pointer(body, valueAt) };
+    if (count * size > inlineBytes) return { type, count, at: this.pointer(body, valueAt), first: null };
+    const isNumber = count > 0 && WHOLE_NUMBERS.has(type);
+    const first = isNumber ? this.number(body, valueAt, size) : null;
+    return { type, count, at: fieldOffset + 4 + inlineBytes, first };
+  }
+
+  private number(view: DataView, at: number, size: number): number {
+    if (size === 1) return view.getUint8(at);
+    if (size === 2) return view.getUint16(at, this.littleEndian);
+    if (size === 4) return view.getUint32(at, this.littleEndian);
+    return Number(view.getBigUint64(at, this.littleEndian));
   }
 
   private pointer(view: DataView, at: number): number {
