@@ -36,7 +36,7 @@ describe('a preview', () => {
     const exact = stretchToBytes(ramp, 100, 730);
     const off =
       exact.reduce((sum, value, i) => sum + Math.abs(value - data[i * info.channels]!), 0) / exact.length;
-    // Lossy coding at quality 85; no source for the figure.
+    // Lossy coding at quality 75; no source for the figure.
     expect(off).toBeLessThan(3);
   });
 
