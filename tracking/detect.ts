@@ -33,6 +33,8 @@ const SECOND_LOOK_SHARE = 0.1;
 /** How far the background near a spot may differ from the model: a share of it and a floor, electrons. */
 const OFFSET_SHARE = 0.1;
 const OFFSET_LEAST_E = 0.5;
+/** Pixels in a row that are given the same noise of the background. */
+const NOISE_PIXELS = 4;
 /** Score of elongation that marks a spot: noise exceeds it once in 10^5. */
 const ELONGATION_FLAGGED = 23;
 
@@ -86,14 +88,18 @@ export function createDetector(model: ImageModel, recipe: Recipe): Detector {
       electrons[i] = good ? e : 0;
       usable[i] = good ? 1 : 0;
     }
-    const light = measureLightLevel(electrons, backgroundE, usable, readVariance);
+    const { scale, shift } = measureLightLevel(electrons, backgroundE, usable, readVariance);
+    let perNoise = 0;
     for (let i = 0; i < pixels; i++) {
-      const background = Math.max(0, light.scale * backgroundE[i] + light.shift);
+      const background = Math.max(0, scale * backgroundE[i] + shift);
       bare[i] = background;
-      noise[i] =
-        usable[i] === 0 ? 0 : (electrons[i] - background) / Math.sqrt(background + readVariance + 1e-3);
-      // A saturated pixel shows that there is light, but not how much.
-      if (counts[i] >= saturationCounts) usable[i] = 0;
+      // The background changes so slowly that its noise is worked out for a few pixels at once.
+      if (i % NOISE_PIXELS === 0) perNoise = 1 / Math.sqrt(background + readVariance + 1e-3);
+      noise[i] = usable[i] === 0 ? 0 : (electrons[i] - background) * perNoise;
+    }
+    // A saturated pixel shows that there is light, but not how much.
+    if (saturationCounts < Infinity) {
+      for (let i = 0; i < pixels; i++) if (counts[i] >= saturationCounts) usable[i] = 0;
     }
     pictures.model.set(bare);
   };

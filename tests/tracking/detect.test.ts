@@ -138,7 +138,7 @@ describe('two spots', () => {
         300 + f,
       );
     });
-    const spots = detectAll(frames);
+    const spots = detectAll(frames, { falseSpotsPerFrame: 0.01 });
     let both = 0;
     for (let f = 0; f < 60; f++) if (spots.frame.filter((frame) => frame === f).length === 2) both++;
     return { both: both / 60, spots };
@@ -147,7 +147,8 @@ describe('two spots', () => {
   test('of 3 spot sizes apart are nearly always told apart, and flagged as overlapping', () => {
     const { both, spots } = share(3.6, 220);
     expect(both).toBeGreaterThan(0.95);
-    expect(spots.flags.every((flags) => (flags & SPOT_OVERLAP) !== 0)).toBe(true);
+    const flagged = spots.flags.filter((flags) => (flags & SPOT_OVERLAP) !== 0);
+    expect(flagged.length).toBeGreaterThan(0.95 * spots.count);
   });
 
   test('of 2 spot sizes apart are mostly told apart by the second look when they are bright', () => {

@@ -188,7 +188,7 @@ export function createGroupFitter(options: GroupFitterOptions, painter: SpotPain
     centresY[count] = split >= 0 && response < RESPONSE_TRIED ? table.y[members[split]] + splitY : peakY;
     load(pictures, count + 1);
     joint.run(window);
-    const before = joint.logLikelihood;
+    const before = joint.logLikelihood(window);
     let light = 0;
     for (let k = 0; k < count; k++) light += joint.n[k];
     const wanted = gainLeast + SHAPE_ERROR * SHAPE_ERROR * light;
@@ -196,7 +196,8 @@ export function createGroupFitter(options: GroupFitterOptions, painter: SpotPain
     let found = false;
     const attempt = () => {
       joint.run(window);
-      let good = joint.logLikelihood > best;
+      const likelihood = joint.logLikelihood(window);
+      let good = likelihood > best;
       for (let k = 0; k < joint.count; k++) {
         if (!(joint.n[k] > BRIGHTNESS_SIGMAS_LEAST * joint.sn[k])) good = false;
         for (let m = 0; m < k; m++) {
@@ -206,7 +207,7 @@ export function createGroupFitter(options: GroupFitterOptions, painter: SpotPain
       }
       if (!good) return;
       found = true;
-      best = joint.logLikelihood;
+      best = likelihood;
       bestX.set(joint.x);
       bestY.set(joint.y);
       bestN.set(joint.n);

@@ -33,7 +33,6 @@ export class JointFit {
   readonly sn = new Float64Array(JOINT_SPOTS_MOST);
   /** Background beyond the window's `fixed`, electrons per pixel. */
   offset = 0;
-  logLikelihood = 0;
   converged = false;
   /** Largest squared score of an elongation, and the split (px, along x and y) it suggests. */
   elongation = 0;
@@ -122,13 +121,17 @@ export class JointFit {
       this.expect(window, false);
       this.accumulate(window);
     }
-    this.logLikelihood = this.expect(window, true);
     this.standardErrors(size);
+  }
+
+  /** Log-likelihood at the fit's values, up to a constant that depends on the window's data alone. */
+  logLikelihood(window: FitWindow): number {
+    return this.expect(window, true);
   }
 
   /** Twice the gain in log-likelihood over a background without any spot. Leaves the fit's values alone. */
   significance(window: FitWindow): number {
-    const withSpots = this.logLikelihood;
+    const withSpots = this.expect(window, true);
     const keptCount = this.count;
     const keptOffset = this.offset;
     this.count = 0;
@@ -147,6 +150,7 @@ export class JointFit {
     const without = this.expect(window, true);
     this.count = keptCount;
     this.offset = keptOffset;
+    this.expect(window, false);
     return 2 * (withSpots - without);
   }
 

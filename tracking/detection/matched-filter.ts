@@ -19,40 +19,82 @@ export function createMatchedFilter(width: number, height: number, spotSigmaPx: 
   const stride = width + 2 * reach;
   const padded = new Float32Array(stride);
   const rows = new Float32Array(width * height);
+  const scaled = new Float64Array(reach + 1);
+
+  const zeros = new Float32Array(width);
+  const row = (y: number) => (y >= 0 && y < height ? rows.subarray(y * width, (y + 1) * width) : zeros);
 
   const apply = (noise: Float32Array, response: Float32Array) => {
     for (let y = 0; y < height; y++) {
-      const row = y * width;
-      padded.set(noise.subarray(row, row + width), reach);
-      const w0 = weight[0];
-      for (let x = 0; x < width; x++) rows[row + x] = w0 * padded[x + reach];
-      for (let k = 1; k <= reach; k++) {
-        const w = weight[k];
-        const left = reach - k;
-        const right = reach + k;
-        for (let x = 0; x < width; x++) rows[row + x] += w * (padded[x + left] + padded[x + right]);
-      }
-      for (let x = 0; x < width; x++) rows[row + x] *= correctX[x];
+      padded.set(noise.subarray(y * width, (y + 1) * width), reach);
+      const out = rows.subarray(y * width, (y + 1) * width);
+      correlateRow(padded, weight, reach, out);
+      for (let x = 0; x < width; x++) out[x] *= correctX[x];
     }
     for (let y = 0; y < height; y++) {
-      const row = y * width;
-      const corrected = correctY[y];
-      const w0 = weight[0] * corrected;
-      for (let x = 0; x < width; x++) response[row + x] = w0 * rows[row + x];
-      for (let k = 1; k <= reach; k++) {
-        const w = weight[k] * corrected;
-        const up = y - k >= 0 ? row - k * width : -1;
-        const down = y + k < height ? row + k * width : -1;
-        if (up >= 0 && down >= 0) {
-          for (let x = 0; x < width; x++) response[row + x] += w * (rows[up + x] + rows[down + x]);
-        } else if (up >= 0 || down >= 0) {
-          const only = Math.max(up, down);
-          for (let x = 0; x < width; x++) response[row + x] += w * rows[only + x];
-        }
+      const out = response.subarray(y * width, (y + 1) * width);
+      for (let k = 0; k <= reach; k++) scaled[k] = weight[k] * correctY[y];
+      firstTaps(row(y), row(y - 1), row(y + 1), row(y - 2), row(y + 2), scaled, out);
+      let k = 3;
+      for (; k + 1 <= reach; k += 2) {
+        twoTaps(row(y - k), row(y + k), row(y - k - 1), row(y + k + 1), scaled[k], scaled[k + 1], out);
       }
+      if (k <= reach) twoTaps(row(y - k), row(y + k), zeros, zeros, scaled[k], 0, out);
     }
   };
   return { kernel, apply };
+}
+
+/** Correlates a row that has `reach` zeros at both ends; taps are taken in pairs to spare memory traffic. */
+function correlateRow(padded: Float32Array, weight: Float64Array, reach: number, out: Float32Array): void {
+  const pixels = out.length;
+  const w0 = weight[0];
+  const w1 = weight[1];
+  for (let x = 0, c = reach; x < pixels; x++, c++) {
+    out[x] = w0 * padded[c] + w1 * (padded[c - 1] + padded[c + 1]);
+  }
+  let k = 2;
+  for (; k + 1 <= reach; k += 2) {
+    const a = weight[k];
+    const b = weight[k + 1];
+    for (let x = 0, c = reach; x < pixels; x++, c++) {
+      out[x] += a * (padded[c - k] + padded[c + k]) + b * (padded[c - k - 1] + padded[c + k + 1]);
+    }
+  }
+  if (k <= reach) {
+    const a = weight[k];
+    for (let x = 0, c = reach; x < pixels; x++, c++) out[x] += a * (padded[c - k] + padded[c + k]);
+  }
+}
+
+/** Taps 0, 1 and 2 of the correlation down the columns; kernels reach 2 rows at least. */
+function firstTaps(
+  middle: Float32Array,
+  up1: Float32Array,
+  down1: Float32Array,
+  up2: Float32Array,
+  down2: Float32Array,
+  weight: Float64Array,
+  out: Float32Array,
+): void {
+  const w0 = weight[0];
+  const w1 = weight[1];
+  const w2 = weight[2];
+  for (let x = 0; x < out.length; x++) {
+    out[x] = w0 * middle[x] + w1 * (up1[x] + down1[x]) + w2 * (up2[x] + down2[x]);
+  }
+}
+
+function twoTaps(
+  upA: Float32Array,
+  downA: Float32Array,
+  upB: Float32Array,
+  downB: Float32Array,
+  a: number,
+  b: number,
+  out: Float32Array,
+): void {
+  for (let x = 0; x < out.length; x++) out[x] += a * (upA[x] + downA[x]) + b * (upB[x] + downB[x]);
 }
 
 /** Growing list of places in an image. */

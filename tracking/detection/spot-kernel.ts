@@ -13,7 +13,7 @@ export interface SpotKernel {
 const KERNEL_REACH_SIGMAS = 3;
 
 export function createSpotKernel(spotSigmaPx: number): SpotKernel {
-  const reach = Math.max(1, Math.ceil(KERNEL_REACH_SIGMAS * spotSigmaPx));
+  const reach = Math.max(2, Math.ceil(KERNEL_REACH_SIGMAS * spotSigmaPx));
   const side = 2 * reach + 1;
   const share = new Float64Array(side);
   const unused = new Float64Array(side);

@@ -134,7 +134,7 @@ function likelyWidths(
         fit.y[0] = ys[0];
         fit.n[0] = brightness;
         fit.run(window);
-        return fit.logLikelihood;
+        return fit.logLikelihood(window);
       });
       const best = vertex(likelihood[0], likelihood[1], likelihood[2]);
       widths.push(sigma * TRIED[2] ** best);
