@@ -1,9 +1,12 @@
 import { spawn } from 'node:child_process';
 import pg from 'pg';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import { migrations } from '@/migrations/index';
 import { bundlePath } from '@/scripts/platform/bundles.mjs';
 import { cloneTemplate, dropDatabase } from '../helpers/fresh-database';
+
+// Each migration is a process of its own.
+vi.setConfig({ testTimeout: 120_000 });
 
 let url: string;
 

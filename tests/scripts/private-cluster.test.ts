@@ -2,13 +2,16 @@ import { chmodSync, existsSync, mkdtempSync, rmSync, statSync, writeFileSync } f
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import pg from 'pg';
-import { afterAll, afterEach, beforeAll, describe, expect, it } from 'vitest';
+import { afterAll, afterEach, beforeAll, describe, expect, it, vi } from 'vitest';
 import { isAlive, waitUntil } from '@/scripts/platform/processes.mjs';
 import { startPrivateCluster } from '@/scripts/platform/private-cluster.mjs';
 import { createSupervisor, type Supervisor } from '@/scripts/platform/supervise.mjs';
 import { postmasterOf } from '@/scripts/platform/stale-postmaster.mjs';
 
 const quiet = { line: () => {}, step: <T>(_doing: string, work: () => Promise<T>) => work() };
+
+// A durable cluster waits for the disk, which other tests keep busy.
+vi.setConfig({ testTimeout: 180_000 });
 
 let data: string;
 let supervisor: Supervisor;
