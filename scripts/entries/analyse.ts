@@ -15,7 +15,8 @@ import { codeVersion } from '@/lib/env';
 import { conditionsFileSchema } from '@/lib/schemas/conditions';
 import { recipeRequestSchema } from '@/lib/schemas/recipe';
 
-const USAGE = 'Usage: npm run --silent analyse -- STACK --conditions C.json [--recipe R.json] --out DIR [--threads N]';
+const USAGE =
+  'Usage: npm run --silent analyse -- STACK --conditions C.json [--recipe R.json] --out DIR [--threads N]';
 const THREADS_MOST = 256;
 
 function readArguments() {
@@ -33,7 +34,9 @@ function readArguments() {
     const threads = Number(values.threads);
     if (positionals.length !== 1 || !conditions || !out) throw new InputError(USAGE);
     if (!Number.isInteger(threads) || threads < 1 || threads > THREADS_MOST) {
-      throw new InputError(`--threads must be a whole number from 1 to ${THREADS_MOST}. Received '${values.threads}'.`);
+      throw new InputError(
+        `--threads must be a whole number from 1 to ${THREADS_MOST}. Received '${values.threads}'.`,
+      );
     }
     return { stack: positionals[0], conditions, recipe, out: resolve(out), threads };
   } catch (cause) {
@@ -70,10 +73,18 @@ async function main(): Promise<void> {
   const stop = () => void pool.close().then(() => rm(workDir, { recursive: true, force: true })).then(() => process.exit(130)); // prettier-ignore
   process.once('SIGINT', stop).once('SIGTERM', stop);
   try {
-    const analysis = await analyseStack({ source, workDir, conditions, recipe, onProgress: tell.progress }, pool);
+    const analysis = await analyseStack(
+      { source, workDir, conditions, recipe, onProgress: tell.progress },
+      pool,
+    );
     await writeTables(args.out, analysis, conditions);
     const stackName = basename(resolve(args.stack));
-    const report = analysisReport(analysis, { stackName, conditions, codeVersion: codeVersion(), threads: args.threads });
+    const report = analysisReport(analysis, {
+      stackName,
+      conditions,
+      codeVersion: codeVersion(),
+      threads: args.threads,
+    });
     await writePieces(join(args.out, 'report.json'), [`${JSON.stringify(report, null, 2)}\n`]);
     tell.line(`${analysis.spots} spots, ${analysis.tracks.count} tracks; results are in ${args.out}`);
   } finally {
