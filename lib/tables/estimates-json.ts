@@ -9,6 +9,14 @@ const roundedInput = ({ value, unit }: EstimateInput): EstimateInput => ({
   unit,
 });
 
+/** By name: a database keeps keys in an order of its own, and the bytes must not tell where the list came from. */
+const sortedInputs = (inputs: Estimate['inputs']): Estimate['inputs'] =>
+  Object.fromEntries(
+    Object.keys(inputs)
+      .sort()
+      .map((name) => [name, roundedInput(inputs[name])]),
+  );
+
 /** `estimates.json`: a list with its keys in a fixed order, ending with a line feed. */
 export function estimatesJson(estimates: readonly Estimate[]): string {
   const list = estimates.map((e) => ({
@@ -19,7 +27,7 @@ export function estimatesJson(estimates: readonly Estimate[]): string {
     low: rounded(e.low),
     high: rounded(e.high),
     level: e.level,
-    inputs: Object.fromEntries(Object.entries(e.inputs).map(([name, input]) => [name, roundedInput(input)])),
+    inputs: sortedInputs(e.inputs),
     note: e.note,
   }));
   return `${JSON.stringify(list, null, 2)}\n`;
