@@ -56,7 +56,10 @@ export function EstimateTable({ label, symbol, displayUnit, rows }: EstimateTabl
               <Unit>{unit}</Unit>
             </span>
           </HeadCell>
-          <HeadCell className="pl-5">{axis ? <AxisNumbers axis={axis} /> : 'Interval'}</HeadCell>
+          <HeadCell className="pl-5">
+            <span className="sr-only">Interval</span>
+            {axis ? <AxisNumbers axis={axis} /> : null}
+          </HeadCell>
           <HeadCell numeric narrow="hide">
             From
           </HeadCell>

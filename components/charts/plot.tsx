@@ -49,7 +49,7 @@ export function Plot({ x, y, heightPx = 352, children }: PlotProps) {
     axisLine: false,
   } as const;
   return (
-    <div style={{ height: heightPx }} className="w-full">
+    <div style={{ height: heightPx }} className="w-full overflow-hidden">
       <ResponsiveContainer width="100%" height="100%" initialDimension={{ width: 484, height: heightPx }}>
         <ComposedChart data={ends} margin={MARGIN} accessibilityLayer={false} style={{ overflow: 'visible' }}>
           <XAxis

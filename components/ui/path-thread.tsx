@@ -28,42 +28,40 @@ export function PathThread({ levels, actions }: { levels: readonly PathLevel[]; 
     if (strip.current) strip.current.scrollLeft = strip.current.scrollWidth;
   }, [here]);
   return (
-    <div>
-      <nav aria-label="Where you are">
-        <ol
-          ref={strip}
-          className="relative flex overflow-x-auto overflow-y-hidden pb-2 pl-sheet-x-narrow [scrollbar-width:none] before:absolute before:bottom-2 before:left-0 before:h-[1.5px] before:w-sheet-x-narrow before:bg-ink before:content-[''] hand:pl-sheet-x hand:before:w-sheet-x print:before:hidden print:pl-0"
-        >
-          {levels.map((level, index) => {
-            const current = index === levels.length - 1;
-            return (
-              <li key={level.href} className={`${LEVEL} ${current ? HERE : PASSED}`}>
-                <Link
-                  href={level.href}
-                  aria-current={current ? 'page' : undefined}
-                  className="group block no-underline outline-offset-[-2px]"
+    <nav aria-label="Where you are" className="relative hand:flex hand:items-end">
+      <div
+        aria-hidden="true"
+        className="absolute inset-x-0 bottom-2 h-px bg-line max-hand:hidden print:hidden"
+      />
+      <ol
+        ref={strip}
+        className="relative flex min-w-0 flex-1 overflow-x-auto overflow-y-hidden pb-2 pl-sheet-x-narrow [scrollbar-width:none] before:absolute before:bottom-2 before:left-0 before:h-[1.5px] before:w-sheet-x-narrow before:bg-ink before:content-[''] hand:pl-sheet-x hand:before:w-sheet-x print:pl-0 print:before:hidden"
+      >
+        {levels.map((level, index) => {
+          const current = index === levels.length - 1;
+          return (
+            <li key={level.href} className={`${LEVEL} ${current ? HERE : PASSED}`}>
+              <Link
+                href={level.href}
+                aria-current={current ? 'page' : undefined}
+                className="group block no-underline outline-offset-[-2px]"
+              >
+                <span className="block text-tick text-ink-3">{level.kind}</span>
+                <span
+                  className={`block whitespace-nowrap leading-[18px] group-hover:text-violet-text ${current ? 'font-strong' : ''}`}
                 >
-                  <span className="block text-tick text-ink-3">{level.kind}</span>
-                  <span
-                    className={`block whitespace-nowrap leading-[18px] group-hover:text-violet-text ${current ? 'font-strong' : ''}`}
-                  >
-                    {level.name}
-                  </span>
-                </Link>
-              </li>
-            );
-          })}
-          <li
-            aria-hidden={actions ? undefined : true}
-            className="mb-[.5px] flex flex-1 items-end justify-end gap-2 border-b border-line pb-2 pr-sheet-x max-hand:hidden print:hidden"
-          >
-            {actions}
-          </li>
-        </ol>
-      </nav>
+                  {level.name}
+                </span>
+              </Link>
+            </li>
+          );
+        })}
+      </ol>
       {actions ? (
-        <div className="flex flex-wrap gap-2 px-sheet-x-narrow pt-1 hand:hidden print:hidden">{actions}</div>
+        <div className="flex flex-wrap gap-2 px-sheet-x-narrow pt-1 hand:shrink-0 hand:flex-nowrap hand:pb-[17px] hand:pl-0 hand:pr-sheet-x hand:pt-0 print:hidden">
+          {actions}
+        </div>
       ) : null}
-    </div>
+    </nav>
   );
 }
