@@ -1,0 +1,173 @@
+'use client';
+
+import { useState } from 'react';
+import { SpotsPlot } from '@/components/charts/spots-plot';
+import { TrackViewer } from '@/components/canvas/track-viewer';
+import { useViewer, useViewerStore } from '@/components/canvas/use-viewer';
+import type { ViewedRecording } from '@/components/canvas/viewer-panel';
+import { Answer } from '@/components/data/answer';
+import { useCandidates } from '@/components/data/use-candidates';
+import { useMeasures } from '@/components/data/use-measures';
+import { useProgress } from '@/components/data/use-progress';
+import { EmptyState, StaleLine } from '@/components/ui/page-states';
+import { PageTitle, Section } from '@/components/ui/sheet';
+import { StateWord } from '@/components/ui/state-bead';
+import { STATE_WORDS } from '@/lib/analysis-words';
+import { formatCount } from '@/lib/format/count';
+import type { AnalysisView, CandidateView, TrackRowView } from '@/lib/views/analysis-view';
+import type { PairSummary } from '@/tracking/flow-measures';
+import { CandidatesSection } from './candidates-section';
+import { DownloadsSection } from './downloads-section';
+import { EstimatesSection } from './estimates-section';
+import { PdfSection } from './pdf-section';
+import { PopulationSection } from './population-section';
+import { ProgressPanel } from './progress-panel';
+import { ProvenanceSection } from './provenance-section';
+import { TrackTable } from './track-table';
+
+interface AnalysisSheetProps {
+  initial: AnalysisView;
+  recording: ViewedRecording & { sha256: string | null };
+  /** The run's conditions in one line. */
+  conditions: string;
+  stopReason: string | null;
+  downloadReason: string | null;
+}
+
+const LINKED = ['measure-flow', 'done'];
+
+/** Everything of an analysis: tracks over frames, what was measured, and where it comes from. */
+export function AnalysisSheet({
+  initial,
+  recording,
+  conditions,
+  stopReason,
+  downloadReason,
+}: AnalysisSheetProps) {
+  const { data: analysis = initial, isError } = useProgress(initial.id, initial);
+  const measures = useMeasures(initial.id, analysis.state);
+  const candidates = useCandidates(initial.id, analysis.state);
+  const store = useViewerStore(recording.frames, recording);
+  const chosenTrack = useViewer(store, (state) => state.chosenTrack);
+  const chosenEvent = useViewer(store, (state) => state.chosenEvent);
+  const [well, setWell] = useState<HTMLDivElement | null>(null);
+  const linked = LINKED.includes(analysis.stage);
+
+  const show = (frame: number, chosen: { chosenTrack: number | null; chosenEvent: number | null }) => {
+    store.goTo(frame);
+    store.set(chosen);
+    well?.scrollIntoView({ block: 'nearest' });
+    well?.querySelector<HTMLElement>('[role=application]')?.focus({ preventScroll: true });
+  };
+  const showTrack = (row: TrackRowView) =>
+    show(Math.round((row.firstFrame + row.lastFrame) / 2), { chosenTrack: row.track, chosenEvent: null });
+  const showCandidate = ({ t0_s, trackA, event }: CandidateView) =>
+    show(recording.frameIntervalS ? t0_s / recording.frameIntervalS : 0, {
+      chosenTrack: trackA,
+      chosenEvent: event,
+    });
+
+  const notYet = (
+    <EmptyState>
+      {analysis.state === 'waiting' || analysis.state === 'running'
+        ? 'Numbers appear here when the flow is measured.'
+        : 'This analysis ended before anything was measured.'}
+    </EmptyState>
+  );
+
+  return (
+    <>
+      <PageTitle
+        state={<StateWord state={analysis.state}>{STATE_WORDS[analysis.state]}</StateWord>}
+        aside={<span className="text-note">{conditions}</span>}
+      >
+        {analysis.recordingName}, {analysis.recipeName ?? 'own settings'}
+      </PageTitle>
+      {isError ? <StaleLine what="The progress may be out of date.">It is asked for again.</StaleLine> : null}
+      <ProgressPanel analysis={analysis} stopReason={stopReason} />
+      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-9 gap-y-6 pt-1 aside:grid-cols-[minmax(0,1fr)_484px]">
+        <div ref={setWell} className="min-w-0">
+          <TrackViewer
+            store={store}
+            recording={recording}
+            analysisId={initial.id}
+            ready={linked}
+            spotsPerFrame={measures.data?.spotsPerFrame ?? []}
+            candidates={candidates.data ?? []}
+          />
+          <Answer query={measures} what="what was measured">
+            {(data) => (data ? <EstimatesSection estimates={data.estimates} /> : null)}
+          </Answer>
+        </div>
+        <div className="min-w-0">
+          <Answer query={measures} what="what was measured">
+            {(data) =>
+              data ? (
+                <>
+                  <PopulationSection populations={data.populations} />
+                  <PdfSection pdfs={data.pdfs} />
+                </>
+              ) : (
+                notYet
+              )
+            }
+          </Answer>
+          <ProvenanceSection analysis={analysis} sha256={recording.sha256} />
+          <DownloadsSection
+            analysisId={initial.id}
+            reason={
+              downloadReason ??
+              (analysis.state === 'done' ? null : 'Files can be had once the analysis is done.')
+            }
+          />
+        </div>
+      </div>
+      <Answer query={candidates} what="the candidates">
+        {(list) =>
+          list && analysis.state === 'done' ? (
+            <CandidatesSection
+              candidates={list}
+              pairs={pairsOf(measures.data?.populations)}
+              chosen={chosenEvent}
+              onChoose={({ event }) => store.set({ chosenEvent: event })}
+              onShow={showCandidate}
+            />
+          ) : null
+        }
+      </Answer>
+      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-9 gap-y-6 pt-[22px] aside:grid-cols-[minmax(0,1fr)_484px]">
+        <TrackTable
+          analysisId={initial.id}
+          tracks={analysis.summary?.tracks ?? null}
+          ready={linked}
+          chosen={chosenTrack}
+          onShow={showTrack}
+        />
+        <Section
+          title="Spots per frame"
+          count={analysis.summary ? `${formatCount(analysis.summary.spots)} in all` : undefined}
+        >
+          {measures.data ? (
+            <SpotsPlot
+              counts={measures.data.spotsPerFrame}
+              label={spotsSentence(measures.data.spotsPerFrame)}
+            />
+          ) : (
+            <EmptyState>Counts appear when the frames have been searched.</EmptyState>
+          )}
+        </Section>
+      </div>
+    </>
+  );
+}
+
+function pairsOf(populations: Record<string, unknown> | undefined): PairSummary | null {
+  const pairs = populations?.pairs;
+  return typeof pairs === 'object' && pairs !== null ? (pairs as PairSummary) : null;
+}
+
+function spotsSentence(counts: readonly number[]): string {
+  if (counts.length === 0) return 'No frame was searched.';
+  const mean = counts.reduce((sum, count) => sum + count, 0) / counts.length;
+  return `Spots per frame over ${counts.length} frames: ${mean.toFixed(1)} on average, ${Math.min(...counts)} to ${Math.max(...counts)}.`;
+}

@@ -1,0 +1,144 @@
+'use client';
+
+import { useState } from 'react';
+import { Button } from '@/components/ui/button';
+import { Segment } from '@/components/ui/choice';
+import { EmptyState } from '@/components/ui/page-states';
+import { Quantity } from '@/components/ui/quantity';
+import { Section } from '@/components/ui/sheet';
+import { StateWord } from '@/components/ui/state-bead';
+import { Cell, HeadCell, Row, Table } from '@/components/ui/table';
+import { countOf, formatCount } from '@/lib/format/count';
+import { DISPLAY_UNITS } from '@/lib/format/unit';
+import type { CandidateView } from '@/lib/views/analysis-view';
+import type { PairSummary } from '@/tracking/flow-measures';
+import { CandidateDetail } from './candidate-detail';
+import { chanceText } from './candidate-words';
+
+const ROWS = 12;
+const WHICH = [
+  { value: 'accepted', label: 'accepted' },
+  { value: 'all', label: 'all' },
+] as const;
+
+interface CandidatesSectionProps {
+  candidates: readonly CandidateView[];
+  pairs: PairSummary | null;
+  chosen: number | null;
+  onChoose: (candidate: CandidateView) => void;
+  onShow: (candidate: CandidateView) => void;
+}
+
+/** Pairs of tracks that meet and part, and what is known of the one that is chosen. */
+export function CandidatesSection({ candidates, pairs, chosen, onChoose, onShow }: CandidatesSectionProps) {
+  const accepted = candidates.filter((candidate) => candidate.accepted);
+  const [which, setWhich] = useState<'accepted' | 'all'>(accepted.length > 0 ? 'accepted' : 'all');
+  const [shown, setShown] = useState(ROWS);
+  const listed = which === 'accepted' ? accepted : candidates;
+  const current = candidates.find(({ event }) => event === chosen) ?? listed[0] ?? null;
+  return (
+    <Section
+      id="candidates"
+      title="Reconnection candidates"
+      count={`${formatCount(accepted.length)} of ${countOf(candidates.length, 'pair')} accepted`}
+      tools={
+        candidates.length > 0 ? (
+          <Segment label="Candidates" options={WHICH} value={which} onChange={setWhich} />
+        ) : null
+      }
+    >
+      {pairs?.note ? <p className="pb-1 text-note text-ink-2">{pairs.note}</p> : null}
+      {candidates.length === 0 ? (
+        <EmptyState>No pair of trapped tracers came near enough and parted again.</EmptyState>
+      ) : (
+        <div className="grid gap-x-9 gap-y-5 aside:grid-cols-[minmax(0,1fr)_484px]">
+          <div className="min-w-0">
+            {listed.length === 0 ? (
+              <EmptyState>No pair passes every criterion.</EmptyState>
+            ) : (
+              <Table label="Reconnection candidates" density="dense">
+                <thead>
+                  <tr>
+                    <HeadCell>Event</HeadCell>
+                    <HeadCell numeric unit="s">
+                      <i>t</i>
+                      <sub>0</sub>
+                    </HeadCell>
+                    <HeadCell narrow="hide">Tracks</HeadCell>
+                    <HeadCell numeric narrow="hide" unit="µm">
+                      Closest
+                    </HeadCell>
+                    <HeadCell numeric>
+                      <i>q</i>
+                    </HeadCell>
+                    <HeadCell>Outcome</HeadCell>
+                    <HeadCell silent>In the frames</HeadCell>
+                  </tr>
+                </thead>
+                <tbody>
+                  {listed.slice(0, shown).map((candidate) => (
+                    <CandidateRow
+                      key={candidate.id}
+                      candidate={candidate}
+                      chosen={candidate.event === current?.event}
+                      onChoose={onChoose}
+                    />
+                  ))}
+                </tbody>
+              </Table>
+            )}
+            {listed.length > shown ? (
+              <Button className="mt-3" onClick={() => setShown(shown + 50)}>
+                {`Show ${Math.min(50, listed.length - shown)} more`}
+              </Button>
+            ) : null}
+          </div>
+          {current ? <CandidateDetail candidate={current} onShow={onShow} /> : null}
+        </div>
+      )}
+    </Section>
+  );
+}
+
+interface CandidateRowProps {
+  candidate: CandidateView;
+  chosen: boolean;
+  onChoose: (candidate: CandidateView) => void;
+}
+
+function CandidateRow({ candidate, chosen, onChoose }: CandidateRowProps) {
+  const { event, t0_s, trackA, trackB, minSeparation_m, qValue, accepted, failed } = candidate;
+  return (
+    <Row selected={chosen}>
+      <Cell head className="tabular-nums">
+        {formatCount(event)}
+      </Cell>
+      <Cell numeric>{t0_s.toFixed(3)}</Cell>
+      <Cell narrow="hide" className="tabular-nums">
+        {formatCount(trackA)} and {formatCount(trackB)}
+      </Cell>
+      <Cell numeric narrow="hide">
+        <Quantity value={minSeparation_m} siPerUnit={DISPLAY_UNITS.smallLength.siPerUnit} digits={3} />
+      </Cell>
+      <Cell numeric>{chanceText(qValue)}</Cell>
+      <Cell>
+        {accepted ? (
+          <StateWord state="done">accepted</StateWord>
+        ) : (
+          <StateWord state="stopped">{countOf(failed.length, 'criterion', 'criteria')} failed</StateWord>
+        )}
+      </Cell>
+      <Cell numeric>
+        <button
+          type="button"
+          onClick={() => onChoose(candidate)}
+          aria-label={`Plot event ${event}`}
+          aria-pressed={chosen}
+          className="min-h-6 underline decoration-line-strong underline-offset-[3px] hover:decoration-violet"
+        >
+          Plot
+        </button>
+      </Cell>
+    </Row>
+  );
+}

@@ -1,0 +1,76 @@
+'use client';
+
+import { useState } from 'react';
+import { PdfPlot } from '@/components/charts/pdf-plot';
+import { Segment, SelectField } from '@/components/ui/choice';
+import { EmptyState } from '@/components/ui/page-states';
+import { Section } from '@/components/ui/sheet';
+import { countOf } from '@/lib/format/count';
+import {
+  componentsOf,
+  lagsOf,
+  pdfsAt,
+  pdfSentence,
+  pdfSeries,
+  type Pdf,
+  type PdfComponentName,
+} from './pdf-choices';
+
+const SCALES = [
+  { value: 'linear', label: 'linear' },
+  { value: 'log', label: 'log' },
+] as const;
+
+/** Velocity densities: which component, at which lag, on which scale. */
+export function PdfSection({ pdfs }: { pdfs: readonly Pdf[] }) {
+  const components = componentsOf(pdfs);
+  const lags = lagsOf(pdfs);
+  const [wanted, setWanted] = useState<PdfComponentName | null>(null);
+  const [lagWanted, setLagWanted] = useState<number | null>(null);
+  const [scale, setScale] = useState<'linear' | 'log'>('log');
+  const component = wanted ?? (components.includes('across') ? 'across' : components[0]);
+  const lag = lags.find(({ lagFrames }) => lagFrames === lagWanted) ?? lags[0];
+  if (!component || !lag) {
+    return (
+      <Section title="Velocity PDF">
+        <EmptyState>No velocity was measured: no track is longer than the shortest lag.</EmptyState>
+      </Section>
+    );
+  }
+  const shown = pdfsAt(pdfs, component, lag.lagFrames);
+  return (
+    <Section
+      title="Velocity PDF"
+      count={`lag ${countOf(lag.lagFrames, 'frame')}, ${Number((lag.lagS * 1e3).toPrecision(3))} ms`}
+      tools={<Segment label="Scale of the density" options={SCALES} value={scale} onChange={setScale} />}
+    >
+      <div className="flex flex-wrap items-end gap-2 py-2">
+        <Segment
+          label="Component"
+          options={components.map((name) => ({ value: name, label: name }))}
+          value={component}
+          onChange={setWanted}
+        />
+        <SelectField
+          label="Lag"
+          hideLabel
+          className="w-36"
+          value={String(lag.lagFrames)}
+          onChange={(event) => setLagWanted(Number(event.target.value))}
+          options={lags.map(({ lagFrames }) => ({
+            value: String(lagFrames),
+            label: `lag ${countOf(lagFrames, 'frame')}`,
+          }))}
+        />
+      </div>
+      <PdfPlot
+        series={shown.map(pdfSeries)}
+        scale={scale}
+        component={component}
+        label={pdfSentence(shown, component, lag.lagS)}
+        noise_m_s={shown.find(({ noise_m_s }) => noise_m_s !== null)?.noise_m_s ?? null}
+        fileName={`velocity-pdf-${component}-lag-${lag.lagFrames}`}
+      />
+    </Section>
+  );
+}

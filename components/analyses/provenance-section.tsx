@@ -1,0 +1,70 @@
+import Link from 'next/link';
+import { Moment } from '@/components/ui/moment';
+import { Facts, Section } from '@/components/ui/sheet';
+import { formatDuration } from '@/lib/format/duration';
+import type { AnalysisView } from '@/lib/views/analysis-view';
+import type { RecipeRequest } from '@/tracking/types';
+import { recipeValueText, RECIPE_WORDS } from './recipe-words';
+
+interface ProvenanceProps {
+  analysis: AnalysisView;
+  sha256: string | null;
+}
+
+/** Where every number of the page comes from. */
+export function ProvenanceSection({ analysis, sha256 }: ProvenanceProps) {
+  const { imageFacts, createdBy, startedAt, finishedAt } = analysis;
+  const recipe = analysis.recipe as RecipeRequest;
+  const tookS =
+    startedAt && finishedAt ? (new Date(finishedAt).getTime() - new Date(startedAt).getTime()) / 1000 : null;
+  return (
+    <Section title="Where it comes from">
+      <Facts
+        items={[
+          { name: 'Recipe', value: analysis.recipeName ?? 'own settings' },
+          {
+            name: 'Stack',
+            value: (
+              <>
+                <Link href={`/recordings/${analysis.recordingId}`}>{analysis.recordingName}</Link>
+                {sha256 ? (
+                  <span className="block break-all text-small tabular-nums">SHA-256 {sha256}</span>
+                ) : null}
+              </>
+            ),
+          },
+          { name: 'Code', value: analysis.codeVersion },
+          {
+            name: 'Started',
+            value: (
+              <>
+                <Moment at={startedAt ?? analysis.createdAt} />
+                {createdBy ? ` by ${createdBy.name}` : null}
+                {tookS !== null ? `, took ${formatDuration(tookS)}` : null}
+              </>
+            ),
+          },
+          ...(imageFacts
+            ? [
+                {
+                  name: 'Image',
+                  value: `${short(imageFacts.gainCountsPerE)} counts per electron, read noise ${short(imageFacts.readNoiseE)} e, offset ${short(imageFacts.offsetCounts)} counts, spot size ${short(imageFacts.spotSigmaPx)} px, ${imageFacts.badPixels} bad pixels`,
+                },
+              ]
+            : []),
+        ]}
+      />
+      <details className="pt-2 text-note">
+        <summary className="inline-flex min-h-6 items-center">The recipe, every value</summary>
+        <Facts
+          items={RECIPE_WORDS.map((word) => ({
+            name: word.label,
+            value: [recipeValueText(word, recipe[word.field]), word.unit].filter(Boolean).join(' '),
+          }))}
+        />
+      </details>
+    </Section>
+  );
+}
+
+const short = (value: number) => String(Number(value.toPrecision(3)));

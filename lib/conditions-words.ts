@@ -1,0 +1,16 @@
+import { quantityText } from './format/quantity';
+import { DISPLAY_UNITS } from './format/unit';
+import type { Conditions } from '@/tracking/types';
+
+/** Conditions in one line: `1.85 K, 100 mW/cm², 200 Hz, 6.5 µm/px`; what is not known is left out. */
+export function conditionsWords(conditions: Partial<Conditions>): string {
+  const words: string[] = [];
+  const add = (value: number | null | undefined, unit: string, siPerUnit: number, digits = 4) => {
+    if (typeof value === 'number') words.push(quantityText({ value, siPerUnit, unit, digits }));
+  };
+  add(conditions.temperature_K, 'K', 1);
+  add(conditions.heatFlux_W_m2, 'mW/cm²', DISPLAY_UNITS.heatFlux.siPerUnit);
+  add(conditions.frameInterval_s ? 1 / conditions.frameInterval_s : null, 'Hz', 1);
+  add(conditions.pixelSize_m, 'µm/px', DISPLAY_UNITS.smallLength.siPerUnit);
+  return words.join(', ');
+}
