@@ -13,16 +13,14 @@ import {
 
 const made: string[] = [];
 
+// Registered while the test file is loaded: inside a test it would come too late.
+afterAll(() => Promise.all(made.map((dir) => rm(dir, { recursive: true, force: true }))));
+
 /** A folder of this test file alone, removed after its last test. */
 export async function stackFolder(): Promise<string> {
-  if (made.length === 0) afterAllOnce();
   const dir = await mkdtemp(join(tmpdir(), 'stack-'));
   made.push(dir);
   return dir;
-}
-
-function afterAllOnce() {
-  afterAll(() => Promise.all(made.map((dir) => rm(dir, { recursive: true, force: true }))));
 }
 
 /** Bytes of one file, or files of a folder. */
