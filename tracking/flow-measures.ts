@@ -37,7 +37,7 @@ export interface PopulationSummary {
   /** Tracks with enough positions to be judged. */
   judged: number;
   groups: PopulationGroup[];
-  /** Bayesian information criterion for 1, 2, 3 groups; null where the fit did not work. */
+  /** Bayesian information criterion for 1, 2, 3 groups; null where none was fitted. */
   bic: (number | null)[];
   /** Distance of two groups in units of their widths (Ashman, Bird & Zepf 1994), the larger of two features. */
   ashmanD: number | null;

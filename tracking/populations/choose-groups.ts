@@ -61,15 +61,22 @@ export function chooseGroups(table: FeatureTable, scaled: Standardised, seed: nu
     variance: scaled.variance,
     coordinate: table.across,
   };
-  const fits: (Mixture | null)[] = [1, 2, 3].map((k) =>
-    k > 1 && table.n < ROWS_MIN ? null : fitGroups(data, k, seed),
-  );
-  const full = fits.map((fit) => (fit ? responsibilities(data, fit.components) : null));
-  const bic = full.map((at, i) =>
-    at && Number.isFinite(at.lnLikelihood)
-      ? bayesianInformation(mixtureParameters(i + 1, FEATURES), table.n, at.lnLikelihood)
-      : null,
-  );
+  const bicOf = (k: number, lnLikelihood: number) =>
+    bayesianInformation(mixtureParameters(k, FEATURES), table.n, lnLikelihood);
+  const fits: (Mixture | null)[] = [fitGroups(data, 1, seed), null, null];
+  const full: (ReturnType<typeof responsibilities> | null)[] = [null, null, null];
+  const bic: (number | null)[] = [null, null, null];
+  for (let k = 1; k <= 3; k++) {
+    // A third group is worth a look only where a second one pays.
+    if (k > 1 && table.n < ROWS_MIN) break;
+    if (k === 3 && !((bic[1] ?? Infinity) < (bic[0] ?? -Infinity))) break;
+    const fit = (fits[k - 1] ??= fitGroups(data, k, seed));
+    if (!fit) continue;
+    const at = responsibilities(data, fit.components);
+    if (!Number.isFinite(at.lnLikelihood)) continue;
+    full[k - 1] = at;
+    bic[k - 1] = bicOf(k, at.lnLikelihood);
+  }
   const one = bic[0];
   const two = bic[1];
   let ashmanD: number | null = null;

@@ -7,11 +7,14 @@ const STARTS = 20;
 /** Starts are compared after this many steps on this many rows; the best few go to the end. */
 const FIRST_STEPS = 15;
 const FIRST_ROWS = 800;
-const FINALISTS = 3;
+const FINALISTS = 2;
+/** A third group is fitted for the record only. */
+const STARTS_BEYOND_TWO = 8;
+const FINALISTS_BEYOND_TWO = 1;
 /** Values are cut here before clustering, so that a few odd tracks don't take a group for themselves. */
 const START_REACH = 4;
-/** The mixture of a very large recording is fitted to this many tracks; its errors are below 2 % then. */
-export const FIT_ROWS_MAX = 3000;
+/** The mixture of a very large recording is fitted to this many tracks; its errors are about 2 % then. */
+export const FIT_ROWS_MAX = 2000;
 
 /**
  * The best mixture of k groups: k-means++ from 20 seeds for first guesses, then
@@ -34,7 +37,7 @@ export function fitGroups(data: MixtureData, k: number, seed: number): Mixture |
 
   const begun: { lnLikelihood: number; centres: number[][] }[] = [];
   const seen = new Set<string>();
-  for (let s = 0; s < STARTS; s++) {
+  for (let s = 0; s < (k === 2 ? STARTS : STARTS_BEYOND_TWO); s++) {
     const { centroids, clusters } = kmeans(fewPoints, k, {
       seed: mixSeed(seed, 100 + s) >>> 0,
       initialization: 'kmeans++',
@@ -50,7 +53,7 @@ export function fitGroups(data: MixtureData, k: number, seed: number): Mixture |
   }
   begun.sort((a, b) => b.lnLikelihood - a.lnLikelihood);
   let best: Mixture | null = null;
-  for (const { centres } of begun.slice(0, FINALISTS)) {
+  for (const { centres } of begun.slice(0, k === 2 ? FINALISTS : FINALISTS_BEYOND_TWO)) {
     const fit = fitMixture(rows, hardStart(allPoints, centres), k);
     if (fit && (!best || fit.lnLikelihood > best.lnLikelihood)) best = fit;
   }

@@ -1,4 +1,4 @@
-import { describe, expect, test } from 'vitest';
+import { describe, expect, test, vi } from 'vitest';
 import type { Estimate } from '@/tracking/estimates/estimate';
 import { lineDensityEstimates } from '@/tracking/estimates/line-density-estimates';
 import { nearestDistances } from '@/tracking/estimates/nearest-lines';
@@ -9,6 +9,9 @@ import { tangleScene } from '@/tracking/simulate/tangle-scene';
 import { trueTracks } from '@/tracking/simulate/true-tracks';
 import type { Conditions, Recipe } from '@/tracking/types';
 import { expectWithin } from '@/tests/helpers/expect-within';
+
+// Whole tangles are simulated and measured here.
+vi.setConfig({ testTimeout: 120_000 });
 
 const IMAGE = { width: 400, height: 400, frames: 100 };
 const RECIPE: Recipe = {

@@ -1,8 +1,11 @@
-import { expect, test } from 'vitest';
+import { expect, test, vi } from 'vitest';
 import { findCandidates } from '@/tracking/pairs/find-candidates';
 import { KIND_TRAPPED } from '@/tracking/simulate/scene';
 import { tangleScene } from '@/tracking/simulate/tangle-scene';
 import { trueTracks } from '@/tracking/simulate/true-tracks';
+
+// Thousands of meetings are fitted here.
+vi.setConfig({ testTimeout: 120_000 });
 
 const IMAGE = { width: 384, height: 384, frames: 120 };
 const CONDITIONS = { pixelSize_m: 1e-5, frameInterval_s: 0.005 };

@@ -1,4 +1,4 @@
-import { describe, expect, test } from 'vitest';
+import { describe, expect, test, vi } from 'vitest';
 import { chooseGroups } from '@/tracking/populations/choose-groups';
 import { standardise } from '@/tracking/populations/feature-table';
 import { findPopulations, FREE, TRAPPED, UNDECIDED } from '@/tracking/populations/populations';
@@ -7,6 +7,9 @@ import { KIND_TRAPPED } from '@/tracking/simulate/scene';
 import { tangleScene } from '@/tracking/simulate/tangle-scene';
 import { trueTracks } from '@/tracking/simulate/true-tracks';
 import type { Conditions } from '@/tracking/types';
+
+// Mixtures are fitted many times over here.
+vi.setConfig({ testTimeout: 120_000 });
 
 const IMAGE = { width: 384, height: 384 };
 const SCENE = {
@@ -41,9 +44,9 @@ function judged(options: Partial<Parameters<typeof tangleScene>[0]>, conditions:
 }
 
 describe('one population is reported as one', () => {
-  test('a single Gaussian cloud of 200 tracks is never split (of 8 seeds)', () => {
+  test('a single Gaussian cloud of 200 tracks is never split (of 5 seeds)', () => {
     let split = 0;
-    for (let seed = 1; seed <= 8; seed++) {
+    for (let seed = 1; seed <= 5; seed++) {
       const random = createRandom(seed);
       const n = 200;
       const table = {
@@ -55,20 +58,17 @@ describe('one population is reported as one', () => {
       };
       if (chooseGroups(table, standardise(table), seed).groups.length !== 1) split++;
     }
-    // At most 5 % may split: 8 fair seeds hold 0.4.
+    // At most 5 % may split: 5 fair seeds hold 0.25.
     expect(split).toBe(0);
   });
 
-  test.each([1, 2, 3, 4])(
-    'free tracers in a parabolic profile stay one group, named free (seed %i)',
-    (seed) => {
-      const { found } = judged({ lineDensityM2: 0, freeTracersPerFrame: 220 }, CONDITIONS, seed);
-      expect(found.summary.judged).toBeGreaterThan(250);
-      expect(found.summary.groups.map((group) => group.name)).toEqual(['free']);
-      expect(found.summary.trappedFraction).toBeNull();
-      expect(found.summary.counts.trapped).toBe(0);
-    },
-  );
+  test.each([1, 2])('free tracers in a parabolic profile stay one group, named free (seed %i)', (seed) => {
+    const { found } = judged({ lineDensityM2: 0, freeTracersPerFrame: 220 }, CONDITIONS, seed);
+    expect(found.summary.judged).toBeGreaterThan(250);
+    expect(found.summary.groups.map((group) => group.name)).toEqual(['free']);
+    expect(found.summary.trappedFraction).toBeNull();
+    expect(found.summary.counts.trapped).toBe(0);
+  });
 
   test('beads alone are one group that does not move with the normal fluid: named trapped', () => {
     const { found } = judged({ freeTracersPerFrame: 0 }, CONDITIONS, 2);
@@ -86,7 +86,7 @@ describe('one population is reported as one', () => {
 });
 
 describe('two populations are told apart', () => {
-  test.each([1, 2, 3])('almost all named tracks are named rightly (seed %i)', (seed) => {
+  test.each([1, 2])('almost all named tracks are named rightly (seed %i)', (seed) => {
     const { found, tracks, isTrapped } = judged({}, CONDITIONS, seed);
     const named = [0, 0];
     const right = [0, 0];
