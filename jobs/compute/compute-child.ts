@@ -119,6 +119,8 @@ export class ComputeChild {
   kill(): Promise<void> {
     if (!this.alive) return Promise.resolve();
     this.alive = false;
+    // Whoever waits for the end must not run out of things to wait for.
+    this.process.ref();
     const gone = new Promise<void>((resolve) => this.process.once('exit', () => resolve()));
     this.process.kill('SIGKILL');
     this.current?.reject(new ComputeError('STOPPED', 'Stopped.'));

@@ -55,15 +55,15 @@ export async function analyseStack(request: LocalRequest, pool: ComputePool): Pr
     return result;
   };
 
-  const stack = await stage('check', (onProgress) =>
-    pool.run(
+  const stack = await stage('check', async (onProgress) => {
+    const report = await pool.run(
       'inspectStack',
       { source, outDir: workDir, expectedSha256: [], previews: false },
       { onProgress, timeoutMs: LONG_TIMEOUT_MS },
-    ),
-  );
-  if (stack.state === 'refused') throw new InputError(stack.refusal.detail);
-
+    );
+    if (report.state === 'refused') throw new InputError(report.refusal.detail);
+    return report;
+  });
   const image = { frames: stack.frames, width: stack.width, height: stack.height };
   const measured = await stage('measure-image', (onProgress) =>
     pool.run(
