@@ -25,7 +25,7 @@ const securityHeaders = [
 ];
 
 /** @type {import('next').NextConfig} */
-export default {
+const config = {
   headers: async () => [{ source: '/:path*', headers: securityHeaders }],
   // Pages answer 403 through `forbidden()`.
   experimental: { authInterrupts: true },
@@ -36,3 +36,5 @@ export default {
   // Sequelize asks for optional drivers by name; bundling it would make each of them mandatory.
   serverExternalPackages: ['sequelize', 'umzug', 'pg-boss', 'sharp', 'jimp', 'pino'],
 };
+
+export default config;

@@ -7,7 +7,7 @@ import { sharedServer } from '../../helpers/server';
 export function launchBrowser(): Promise<Browser> {
   const asRoot = process.getuid?.() === 0;
   return chromium.launch({
-    executablePath: process.env.CHROMIUM ?? '/usr/bin/chromium',
+    executablePath: process.env.TEST_CHROMIUM ?? '/usr/bin/chromium',
     headless: true,
     args: [
       ...(asRoot ? ['--no-sandbox', '--disable-dev-shm-usage'] : []),
