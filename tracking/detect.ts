@@ -1,5 +1,5 @@
 import { createGroupFitter, type FramePictures } from './detection/group-fitter';
-import { JOINT_SPOTS_MOST } from './detection/joint-fit';
+import { JOINT_SPOTS_MOST } from './detection/fit-work';
 import { measureLightLevel } from './detection/light-level';
 import { createMatchedFilter, findPeaks, type PeakList } from './detection/matched-filter';
 import { createSpotPainter } from './detection/spot-painter';
@@ -205,10 +205,11 @@ export function createDetector(model: ImageModel, recipe: Recipe): Detector {
   const flagsOf = (i: number): number => {
     const x = table.x[i];
     const y = table.y[i];
-    let flags = table.flags[i];
+    let flags = 0;
     const margin = 2 * sigma;
     if (x < margin || y < margin || x > width - 1 - margin || y > height - 1 - margin) flags |= SPOT_EDGE;
     if (table.near(i, OVERLAP_SIGMAS * sigma, near) > 0) flags |= SPOT_OVERLAP;
+    if (table.elongation[i] > ELONGATION_FLAGGED) flags |= SPOT_ELONGATED;
     if (saturationCounts < Infinity && touchesSaturation(x, y)) flags |= SPOT_SATURATED;
     return flags;
   };

@@ -1,5 +1,7 @@
+import { measureElongation, type Elongation } from './elongation';
 import { FitWindow } from './fit-window';
-import { JOINT_SPOTS_MOST, JointFit } from './joint-fit';
+import { JOINT_SPOTS_MOST } from './fit-work';
+import { JointFit } from './joint-fit';
 import { createSecondLook, SHAPE_ERROR } from './second-look';
 import type { SpotPainter } from './spot-painter';
 import type { SpotTable } from './spot-table';
@@ -61,6 +63,9 @@ export function createGroupFitter(options: GroupFitterOptions, painter: SpotPain
   const bestX = new Float64Array(JOINT_SPOTS_MOST);
   const bestY = new Float64Array(JOINT_SPOTS_MOST);
   const bestN = new Float64Array(JOINT_SPOTS_MOST);
+
+  const elongation: Elongation = { score: 0, splitX: 0, splitY: 0 };
+  const widest = { split: -1, splitX: 0, splitY: 0 };
 
   const paintAll = (
     table: SpotTable,
@@ -134,6 +139,21 @@ export function createGroupFitter(options: GroupFitterOptions, painter: SpotPain
     return false;
   };
 
+  /** Scores of elongation after a fit, and the member that looks most like two. */
+  const findWidest = (table: SpotTable, members: Int32Array, count: number) => {
+    widest.split = -1;
+    let most = ELONGATION_TRIED;
+    for (let k = 0; k < count; k++) {
+      measureElongation(joint, window, k, elongation);
+      table.elongation[members[k]] = elongation.score;
+      if (elongation.score <= most) continue;
+      most = elongation.score;
+      widest.split = k;
+      widest.splitX = elongation.splitX;
+      widest.splitY = elongation.splitY;
+    }
+  };
+
   const fitPlain = (
     table: SpotTable,
     members: Int32Array,
@@ -149,6 +169,7 @@ export function createGroupFitter(options: GroupFitterOptions, painter: SpotPain
       if (count === 1 || !dropOne(table, members, count)) break;
       count--;
     }
+    findWidest(table, members, count);
     paintAll(table, members, count, pictures.model, 1);
     return count;
   };
@@ -161,21 +182,9 @@ export function createGroupFitter(options: GroupFitterOptions, painter: SpotPain
     pictures: FramePictures,
     gainLeast: number,
   ): boolean => {
-    let split = -1;
-    let splitScore = ELONGATION_TRIED;
-    let splitX = 0;
-    let splitY = 0;
-    for (let k = 0; k < count; k++) {
-      joint.measureElongation(window, k);
-      if (joint.elongation > splitScore) {
-        splitScore = joint.elongation;
-        split = k;
-        splitX = joint.splitX;
-        splitY = joint.splitY;
-      }
-    }
     const peak = look.strongest(window, pictures.model, pictures.bare, width);
     const { response } = peak;
+    const { split, splitX, splitY } = widest;
     if (split < 0 && response < RESPONSE_TRIED) return false;
     const peakX = peak.xPx;
     const peakY = peak.yPx;

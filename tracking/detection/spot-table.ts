@@ -9,7 +9,8 @@ export class SpotTable {
   sn = new Float64Array(256);
   /** Matched-filter response that found it. */
   response = new Float64Array(256);
-  flags = new Uint8Array(256);
+  /** Score of being longer one way than the other, see `elongation.ts`. */
+  elongation = new Float64Array(256);
   /** Number of the group that it is fitted with, -1 for none yet. */
   group = new Int32Array(256);
   /** 0 once it turned out not to be a spot. */
@@ -31,7 +32,7 @@ export class SpotTable {
     this.sy[i] = Infinity;
     this.sn[i] = Infinity;
     this.response[i] = response;
-    this.flags[i] = 0;
+    this.elongation[i] = 0;
     this.group[i] = -1;
     this.alive[i] = 1;
     return i;
@@ -109,9 +110,7 @@ export class SpotTable {
     this.sy = wider(this.sy);
     this.sn = wider(this.sn);
     this.response = wider(this.response);
-    const flags = new Uint8Array(room);
-    flags.set(this.flags);
-    this.flags = flags;
+    this.elongation = wider(this.elongation);
     const group = new Int32Array(room);
     group.set(this.group);
     this.group = group;
