@@ -37,7 +37,8 @@ export function pdfEdges(sorted: Float64Array, noiseMS: number): number[] {
   // The upper edge of a bin belongs to the next, so the last bin must end beyond the largest value.
   const above = outward(Math.max(0, most - middle)).map((at) => middle + at);
   const below = outward(Math.max(0, middle - least)).map((at) => middle - at);
-  return [...below.reverse(), middle, ...above];
+  // Adding 0 turns a negative zero, which JSON would not keep, into a plain one.
+  return [...below.reverse(), middle, ...above].map((edge) => edge + 0);
 }
 
 /** Bin of a value for `edges` ascending; edges[bin] <= value < edges[bin + 1]. */
