@@ -131,7 +131,13 @@ export const ROUTES = {
     answer: listOf(uploadViewSchema),
   },
 
-  'POST /uploads': { action: 'upload', summary: 'tus 1.0.0: begin an upload', status: 201, counted: false },
+  'POST /uploads': {
+    action: 'upload',
+    summary: 'tus 1.0.0: begin an upload',
+    status: 201,
+    counted: false,
+    idempotent: false,
+  },
   'HEAD /uploads/{upload}': { action: 'upload', summary: 'tus 1.0.0: how much has arrived' },
   'PATCH /uploads/{upload}': {
     action: 'upload',

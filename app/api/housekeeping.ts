@@ -1,0 +1,30 @@
+import { dropOldKeys } from '@/auth/idempotency';
+import { log } from '@/auth/log';
+import { dropOldWindows } from '@/auth/rate-limit';
+import { forgetEmptyFolders, reconcileUploads } from './uploads/reconcile-uploads';
+
+const EVERY_MS = 3_600_000;
+/** After a failure, as while the database is away. */
+const AGAIN_MS = 15_000;
+
+const shared = globalThis as unknown as { beadlineHousekeeping?: NodeJS.Timeout };
+
+/** Settles what a crash has left, now and every hour. Started once per web process. */
+export function startHousekeeping(): void {
+  if (shared.beadlineHousekeeping) return;
+  const turn = async () => {
+    let nextMs = EVERY_MS;
+    try {
+      await reconcileUploads();
+      await forgetEmptyFolders();
+      await dropOldWindows();
+      await dropOldKeys();
+    } catch (err) {
+      log.warn({ err }, 'housekeeping failed, tried again soon');
+      nextMs = AGAIN_MS;
+    }
+    shared.beadlineHousekeeping = setTimeout(turn, nextMs);
+    shared.beadlineHousekeeping.unref();
+  };
+  shared.beadlineHousekeeping = setTimeout(turn, 0);
+}

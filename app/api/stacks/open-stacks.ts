@@ -1,0 +1,51 @@
+import { stackFolder } from '@/jobs/stack-folder';
+import { openStack, type StackReader } from '@/stacks/open-stack';
+
+/** Stacks kept open for whoever scrubs through them; each costs a few file descriptors. */
+const OPEN_MOST = 12;
+
+interface Entry {
+  reader: Promise<StackReader>;
+  users: number;
+}
+
+const shared = globalThis as unknown as { beadlineStacks?: Map<string, Entry> };
+const entries = (): Map<string, Entry> => (shared.beadlineStacks ??= new Map());
+
+/** Runs the work with the open stack of a recording; `version` tells a stack that was checked anew from the old. */
+export async function withStack<T>(
+  recordingId: string,
+  version: number,
+  work: (stack: StackReader) => Promise<T>,
+): Promise<T> {
+  const key = `${recordingId}:${version}`;
+  const entry = entries().get(key) ?? { reader: openStack(stackFolder(recordingId)), users: 0 };
+  // Put in again at the end: the first entry is always the one not used for longest.
+  entries().delete(key);
+  entries().set(key, entry);
+  entry.users += 1;
+  try {
+    return await work(await entry.reader);
+  } catch (cause) {
+    if (await failed(entry)) entries().delete(key);
+    throw cause;
+  } finally {
+    entry.users -= 1;
+    closeOldest();
+  }
+}
+
+const failed = (entry: Entry): Promise<boolean> =>
+  entry.reader.then(
+    () => false,
+    () => true,
+  );
+
+function closeOldest(): void {
+  for (const [key, entry] of entries()) {
+    if (entries().size <= OPEN_MOST) return;
+    if (entry.users > 0) continue;
+    entries().delete(key);
+    entry.reader.then((stack) => stack.close()).catch(() => undefined);
+  }
+}

@@ -1,0 +1,78 @@
+import { open, readFile, rename, rm, stat, truncate, writeFile, mkdir } from 'node:fs/promises';
+import { dirname, join } from 'node:path';
+import { folderFile, stackFile } from '@/jobs/stack-folder';
+import type { UploadRow } from '@/models/queries/uploads';
+import { uploadsFolder } from '@/models/queries/received-bytes';
+
+export const bytesFile = (id: string): string => join(uploadsFolder(), id);
+const noteFile = (id: string): string => `${bytesFile(id)}.json`;
+/** Says from which byte on what is stored has not been checked against its checksum. */
+const uncheckedFile = (id: string): string => `${bytesFile(id)}.unchecked`;
+
+/** Where a finished upload's bytes belong. */
+export const homeOf = ({ recordingId, position }: Pick<UploadRow, 'recordingId' | 'position'>): string =>
+  position === null ? stackFile(recordingId) : folderFile(recordingId, position);
+
+export async function sizeOf(path: string): Promise<number | null> {
+  const file = await stat(path).catch(() => null);
+  return file?.size ?? null;
+}
+
+/** Bytes that count as arrived: a piece whose checksum was not verified does not. */
+export async function arrivedBytes(id: string): Promise<number> {
+  const size = (await sizeOf(bytesFile(id))) ?? 0;
+  const unchecked = await readFile(uncheckedFile(id), 'utf8').catch(() => null);
+  return unchecked === null ? size : Math.min(size, Number(unchecked));
+}
+
+/** Before a piece with a checksum is written: what comes after this byte counts for nothing yet. */
+export const markUnchecked = (id: string, offset: number): Promise<void> =>
+  writeFile(uncheckedFile(id), String(offset));
+
+export const markChecked = (id: string): Promise<void> => rm(uncheckedFile(id), { force: true });
+
+/** Takes away a piece that turned out wrong, or was left unverified when its process died. */
+export async function dropUnchecked(id: string): Promise<void> {
+  const unchecked = await readFile(uncheckedFile(id), 'utf8').catch(() => null);
+  if (unchecked === null) return;
+  const size = await sizeOf(bytesFile(id));
+  if (size !== null && size > Number(unchecked)) await truncate(bytesFile(id), Number(unchecked));
+  await markChecked(id);
+}
+
+/** The metadata as it was sent, for HEAD. */
+export async function storedMetadata(id: string): Promise<Record<string, string | null>> {
+  const text = await readFile(noteFile(id), 'utf8').catch(() => '{}');
+  const note = JSON.parse(text) as { metadata?: Record<string, string | null> };
+  return note.metadata ?? {};
+}
+
+export async function removeUploadFiles(id: string): Promise<void> {
+  for (const path of [bytesFile(id), noteFile(id), uncheckedFile(id)]) await rm(path, { force: true });
+}
+
+/**
+ * Puts the bytes where the recording looks for them, on disk for good before anything says so. A
+ * second call finds them there already.
+ */
+export async function moveHome(
+  row: Pick<UploadRow, 'id' | 'recordingId' | 'position' | 'bytes'>,
+): Promise<void> {
+  const from = bytesFile(row.id);
+  const to = homeOf(row);
+  await mkdir(dirname(to), { recursive: true });
+  if ((await sizeOf(from)) === null && (await sizeOf(to)) === row.bytes) return;
+  await flush(from);
+  await rename(from, to);
+  await flush(dirname(to));
+  await flush(uploadsFolder());
+}
+
+async function flush(path: string): Promise<void> {
+  const handle = await open(path, 'r');
+  try {
+    await handle.sync();
+  } finally {
+    await handle.close();
+  }
+}

@@ -1,0 +1,86 @@
+import { statfs } from 'node:fs/promises';
+import { LabError } from '@/lib/errors';
+import { prolongUpload, type UploadRow } from '@/models/queries/uploads';
+import { uploadsFolder } from '@/models/queries/received-bytes';
+import { readChecksum, type Checksum } from './checksum';
+import { finishUpload } from './finish-upload';
+import { expiresHeader, headersOf, newExpiry } from './tus-headers';
+import { passToTus } from './tus-server';
+import { watchBody } from './upload-body';
+import { arrivedBytes, dropUnchecked, markChecked, markUnchecked } from './upload-files';
+import type { Holder } from './upload-locks';
+
+/** Below this a failed write means a full disk, bytes. */
+const FULL_BYTES = 4e6;
+
+/**
+ * Takes in one piece of an upload, by PATCH or with the creation. The caller holds the lock.
+ * @param offset how much has arrived until now
+ * @returns headers for the answer, `Upload-Offset` with the new offset among them
+ */
+export async function writePiece(
+  request: Request,
+  row: UploadRow,
+  offset: number,
+  method: 'POST' | 'PATCH',
+  holder: Holder,
+): Promise<Record<string, string>> {
+  const checksum = readChecksum(request.headers.get('upload-checksum'));
+  const announced = Number(request.headers.get('content-length') ?? 0);
+  if (offset + announced > row.bytes) {
+    throw new LabError('TOO_LARGE', `Larger than announced (${row.bytes.toLocaleString('en-US')} bytes).`);
+  }
+  const body = watchBody(request.body, checksum, holder);
+  if (checksum) await markUnchecked(row.id, offset);
+  const response = await passToTus(request, { method, id: row.id, body: body.stream });
+  if (checksum) await verify(row.id, checksum, body.isWhole() && response.ok, body.digest());
+  const arrived = await arrivedBytes(row.id);
+  if (!response.ok) await explain(response, row, arrived);
+  if (arrived === row.bytes) {
+    await finishUpload(row);
+    return { ...headersOf(row), 'Upload-Offset': String(arrived) };
+  }
+  const expiresAt = newExpiry();
+  await prolongUpload(row.id, expiresAt);
+  return { ...headersOf(row), ...expiresHeader(expiresAt), 'Upload-Offset': String(arrived) };
+}
+
+/**
+ * tus 1.0.0, checksum: "If the checksums mismatch, the Server MUST respond with the 460 Checksum
+ * Mismatch status [...] the chunk MUST be discarded and the offset MUST NOT be updated." A piece
+ * that was cut short can't be verified and is discarded too.
+ */
+async function verify(id: string, checksum: Checksum, whole: boolean, digest: Buffer | null): Promise<void> {
+  if (whole && digest && digest.equals(checksum.digest)) {
+    await markChecked(id);
+    return;
+  }
+  await dropUnchecked(id);
+  if (whole) {
+    throw new LabError('CHECKSUM_MISMATCH', 'The checksum of this piece differs. Send it again.');
+  }
+}
+
+/** Says why nothing, or not all, could be written; what has arrived counts. */
+async function explain(response: Response, row: UploadRow, arrived: number): Promise<never> {
+  const headers = { ...headersOf(row), 'Upload-Offset': String(arrived) };
+  if (response.status === 413) {
+    throw new LabError('TOO_LARGE', `Larger than announced (${row.bytes.toLocaleString('en-US')} bytes).`, {
+      headers,
+    });
+  }
+  const disk = await statfs(uploadsFolder()).catch(() => null);
+  if (disk && disk.bavail * disk.bsize < FULL_BYTES) {
+    throw new LabError('STORAGE_FULL', 'Storage full. What has arrived is kept: go on when there is room.', {
+      headers,
+    });
+  }
+  throw new LabError(
+    'UNAVAILABLE',
+    'The piece was cut off. Ask how much has arrived, and go on from there.',
+    {
+      headers,
+      cause: new Error(`tus answered ${response.status}: ${(await response.text()).slice(0, 200)}`),
+    },
+  );
+}

@@ -1,0 +1,16 @@
+import { memberRoute, methods } from '@/app/api/member-route';
+import { assertRoomFor } from '@/app/api/uploads/room-for';
+import { Answer } from '@/auth/answer';
+import { assertNotDeleted } from '@/models/queries/change-row';
+import { getRun } from '@/models/queries/runs';
+import { createFolder } from '@/models/queries/uploads';
+
+export const dynamic = 'force-dynamic';
+
+export const { GET, POST, PUT, PATCH, DELETE } = methods({
+  POST: memberRoute('POST /runs/{runId}/folders', async ({ viewer, params, body }) => {
+    assertNotDeleted(await getRun(viewer.labId, params.runId), 'run');
+    await assertRoomFor(viewer.labId, body.bytes);
+    return new Answer(await createFolder(viewer, params.runId, body), 201);
+  }),
+});
