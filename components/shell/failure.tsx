@@ -18,7 +18,7 @@ export function Failure({ error, retry }: { error: Error & { digest?: string }; 
       </p>
       {error.digest ? (
         <p className="text-note text-ink-2">
-          The server keeps the details under <code className="bg-sunk px-1 tabular-nums">{error.digest}</code>
+          The server keeps the details under <span className="bg-sunk px-1 tabular-nums">{error.digest}</span>
           ; give this number to your administrator.
         </p>
       ) : null}

@@ -21,14 +21,14 @@ export function Head({ places, viewer, switchLab, work }: HeadProps) {
   const current = currentPlace(places, usePathname());
   const online = useOnline();
   return (
-    <header className="print:px-0">
+    <header>
       <a
         href="#main"
         className="absolute left-2 top-2 z-notice -translate-y-16 rounded-button bg-ink px-4 py-2 text-paper no-underline focus:translate-y-0 hover:text-paper"
       >
         Skip to the page
       </a>
-      <div className="flex h-12 items-stretch gap-3 px-sheet-x-narrow hand:h-head hand:gap-[34px] hand:px-sheet-x">
+      <div className="flex h-12 items-stretch gap-3 px-sheet-x-narrow hand:h-head hand:gap-[34px] hand:px-sheet-x print:px-0">
         <Link href="/" className="flex items-center no-underline hover:text-ink">
           <Wordmark />
         </Link>

@@ -11,24 +11,20 @@ export function PlainPage({ title, children }: { title: string; children: ReactN
           <Wordmark />
         </Link>
       </header>
+      {/* A thread with a bead that isn't there, across the window. */}
+      <svg width="100%" height="18" aria-hidden="true" className="mt-6 block">
+        <line x1="0" x2="100%" y1="9" y2="9" className="stroke-line" />
+        <line x1="0" x2="172" y1="9" y2="9" className="stroke-ink" strokeWidth="1.5" />
+        <circle
+          cx="172"
+          cy="9"
+          r="5"
+          className="fill-paper stroke-ink"
+          strokeWidth="1.5"
+          strokeDasharray="3 2"
+        />
+      </svg>
       <main id="main" className="px-sheet-x-narrow hand:px-sheet-x">
-        <svg
-          width="220"
-          height="18"
-          aria-hidden="true"
-          className="-ml-8 mt-6 block max-w-full overflow-visible"
-        >
-          <path d="M-400 9H170" className="stroke-ink" strokeWidth="1.5" />
-          <path d="M170 9H420" className="stroke-line" />
-          <circle
-            cx="170"
-            cy="9"
-            r="5"
-            className="fill-paper stroke-ink"
-            strokeWidth="1.5"
-            strokeDasharray="3 2"
-          />
-        </svg>
         <h1 className="pb-2 pt-6 font-serif text-title-narrow font-title tracking-[-.008em] hand:text-title">
           {title}
         </h1>

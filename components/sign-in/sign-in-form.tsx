@@ -51,6 +51,8 @@ export function SignInForm({ destination }: SignInFormProps) {
     setProblem(null);
     let found: Problem | null;
     try {
+      // Without an answer signIn would leave for an error page, and what was typed would be gone.
+      if (!(await fetch('/api/auth/csrf')).ok) throw new Error('no answer');
       const answer = await signIn('credentials', {
         email: String(form.get('email') ?? '').trim(),
         password: String(form.get('password') ?? ''),
