@@ -52,10 +52,10 @@ describe('from nothing to numbers with a token', () => {
       bytes.subarray(third, 2 * third),
       Math.floor(third / 2),
     );
-    const offset = await until(async () => {
-      const at = await uploadOffset(script, upload.location);
-      return at >= third ? at : null;
-    });
+    const offset = await until(
+      () => uploadOffset(script, upload.location),
+      (at) => at >= third,
+    );
     expect(offset).toBeLessThanOrEqual(2 * third);
     expect((await patchUpload(script, upload.location, offset, bytes.slice(offset, 2 * third))).status).toBe(
       204,
@@ -64,10 +64,11 @@ describe('from nothing to numbers with a token', () => {
     expect(last.status).toBe(204);
     expect(last.headers.get('Beadline-Recording')).toBe(recordingId);
 
-    const recording = await until(async () => {
-      const view = await script.json<RecordingView>(`/api/v1/recordings/${recordingId}`);
-      return view.state === 'ready' || view.state === 'refused' ? view : null;
-    });
+    const recording = await until(
+      () => script.json<RecordingView>(`/api/v1/recordings/${recordingId}`),
+      ({ state }) => state === 'ready' || state === 'refused',
+      { withinMs: 60_000 },
+    );
     expect(recording).toMatchObject({
       state: 'ready',
       refusal: null,
