@@ -1,6 +1,7 @@
 import { assembleTracks } from './linking/assemble-tracks';
 import { linkPass, type LinkLimits } from './linking/link-pass';
 import { firstStatistics, measureStatistics } from './linking/motion-statistics';
+import { statisticsSample } from './linking/statistics-sample';
 import type { Recipe, Spots, Tracks } from './types';
 
 /** Size of the recording that the spots are of. */
@@ -35,8 +36,9 @@ export function linkSpots(
     longestStepPx: recipe.longestStepPx,
     mayVanishFrames: recipe.mayVanishFrames,
   };
-  const rough = linkPass(spots, limits, firstStatistics(spots, limits));
-  const before = linkPass(spots, limits, measureStatistics(spots, rough, limits));
+  const sample = statisticsSample(spots);
+  const rough = linkPass(sample, limits, firstStatistics(spots, limits));
+  const before = linkPass(spots, limits, measureStatistics(sample, rough, limits));
   return assembleTracks(spots, before, recipe.shortestTrackFrames);
 }
 

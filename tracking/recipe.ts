@@ -36,14 +36,16 @@ export const EFFORTS: readonly Recipe['effort'][] = ['full', 'quick'];
  * Values of the fields that "auto" doesn't take from the recording itself.
  *
  * 0.1 false spots a frame costs hardly any true ones and, since false spots seldom repeat, hardly
- * any false track of three frames. 8 px is twice the fastest step of a well-planned recording.
+ * any false track of three frames. 8 px is twice the fastest step of a well-planned recording. A
+ * blink lasts a frame or two, the meeting of two tracers a little longer; beyond three frames a
+ * tracer that comes back is more and more often another one.
  */
 export const RECIPE_DEFAULTS: Readonly<
   Omit<Recipe, 'spotSizePx' | 'gain' | 'readNoise_e' | 'closestApproach_m'>
 > = {
   falseSpotsPerFrame: 0.1,
   longestStepPx: 8,
-  mayVanishFrames: 2,
+  mayVanishFrames: 3,
   shortestTrackFrames: 3,
   effort: 'full',
   lagsFrames: [1, 2, 4, 8],

@@ -96,6 +96,22 @@ export function concatSpots(runs: readonly Spots[]): Spots {
   return out;
 }
 
+/** Spots `from .. to - 1` as views; nothing is copied. */
+export function sliceSpots(spots: Spots, from: number, to: number): Spots {
+  const { frame, xPx, yPx, sxPx, syPx, brightness, snr, flags } = spots;
+  return {
+    count: to - from,
+    frame: frame.subarray(from, to),
+    xPx: xPx.subarray(from, to),
+    yPx: yPx.subarray(from, to),
+    sxPx: sxPx.subarray(from, to),
+    syPx: syPx.subarray(from, to),
+    brightness: brightness.subarray(from, to),
+    snr: snr.subarray(from, to),
+    flags: flags.subarray(from, to),
+  };
+}
+
 /**
  * Spots as bytes: magic, version, count, 0 (four 32-bit numbers), then the arrays one behind the
  * other, all little-endian.

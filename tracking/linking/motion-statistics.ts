@@ -10,7 +10,8 @@ const JITTER_LEAST_PX2 = 0.02 ** 2;
 const SAMPLES_LEAST = 30;
 const JUMP_SHARE_LEAST = 0.01;
 const JUMP_SHARE_MOST = 0.2;
-const FOUND_SHARE_MOST = 0.99;
+/** Tracers that merge with others are missed for longer than chance would have it. */
+const FOUND_SHARE_MOST = 0.97;
 const FOUND_SHARE_LEAST = 0.5;
 
 /** What is assumed before anything was linked: anything up to the longest step is as good. */
@@ -43,11 +44,20 @@ export function measureStatistics(spots: Spots, before: Int32Array, limits: Link
   let measured = 0;
   let links = 0;
   let spanned = 0;
-  const followed = new Uint8Array(spots.count);
-  for (let s = 0; s < spots.count; s++) if (before[s] >= 0) followed[before[s]] = 1;
+  let starts = 0;
+  let frames = 0;
+  let opening = true;
   for (let s = 0; s < spots.count; s++) {
+    if (s === 0 || spots.frame[s] !== spots.frame[s - 1]) {
+      // All tracers of a frame without one before it start there; that says nothing of how many are new.
+      opening = s === 0 || spots.frame[s] !== spots.frame[s - 1] + 1;
+      if (!opening) frames++;
+    }
     const b = before[s];
-    if (b < 0) continue;
+    if (b < 0) {
+      if (!opening) starts++;
+      continue;
+    }
     links++;
     spanned += spots.frame[s] - spots.frame[b];
     if (spots.frame[s] - spots.frame[b] !== 1) continue;
@@ -78,7 +88,6 @@ export function measureStatistics(spots: Spots, before: Int32Array, limits: Link
   const meanX = mean(stepX);
   const meanY = mean(stepY);
   const startVariance = 0.5 * (spread(stepX, meanX) + spread(stepY, meanY));
-  const starts = spots.count - links;
   return {
     jitter,
     meanX,
@@ -87,7 +96,7 @@ export function measureStatistics(spots: Spots, before: Int32Array, limits: Link
     jumpShare,
     jumpVariance: Math.min(first.jumpVariance, jumpVariance),
     foundShare: clamp(links / Math.max(1, spanned), FOUND_SHARE_LEAST, FOUND_SHARE_MOST),
-    newPerPx2: Math.max(1, starts) / Math.max(1, limits.frames * limits.width * limits.height),
+    newPerPx2: Math.max(1, starts) / Math.max(1, frames * limits.width * limits.height),
   };
 }
 
