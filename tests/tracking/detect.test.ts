@@ -168,6 +168,16 @@ describe('two spots', () => {
   });
 });
 
+test('a bright spot that is a little wider than assumed is not taken for two', () => {
+  const narrow = { ...MODEL, spotSigmaPx: 1.14 };
+  for (const brightness of [200, 1000, 5000]) {
+    const frames = Array.from({ length: 60 }, (_, f) => frameOf([[64 + f / 60, 64.3, brightness]], 1200 + f));
+    const { xPx, yPx } = detectAll(frames, {}, narrow);
+    const near = xPx.filter((x, i) => Math.hypot(x - 64.5, yPx[i] - 64.3) < 8);
+    expect(near.length, `${brightness} electrons`).toBe(60);
+  }
+});
+
 test('spots come by frame, then y, then x, whatever their brightness', () => {
   const lights: Light[] = [
     [100, 20, 900],
