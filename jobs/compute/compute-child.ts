@@ -135,7 +135,10 @@ export class ComputeChild {
     if (message.kind === 'done') return current.resolve(message.output);
     const { name, message: sentence, stack, field } = message.error;
     const code = name === 'RecipeRangeError' ? 'RECIPE' : 'FAULT';
-    current.reject(new ComputeError(code, sentence, { field, cause: stack }));
+    const error = new ComputeError(code, sentence, { field });
+    // The trace of where it happened, in the child, is the one that helps.
+    if (stack) error.stack = stack;
+    current.reject(error);
   }
 
   private ended(code: number | null, signal: NodeJS.Signals | null, cause?: Error): void {
