@@ -31,12 +31,15 @@ export function combine(results: readonly DensityResult[]): DensityResult {
     const note = `The methods disagree (chance ${mean.p.toPrecision(2)}), so there is no combined value.`;
     return notUsable(method, note, inputs);
   }
-  const systematic = Math.min(...groups.map((g) => g.systematic), mean.error);
+  // Errors of chance add up with the weights of the mean; the rest of its error is systematic.
+  const weights = groups.map((g) => 1 / (g.statistical ** 2 + g.systematic ** 2 + mean.tau2));
+  const total = weights.reduce((a, b) => a + b, 0);
+  const statistical = Math.hypot(...groups.map((g, i) => (weights[i] / total) * g.statistical));
   return {
     method,
     valueM2: Math.exp(mean.mean),
-    statistical: Math.sqrt(Math.max(0, mean.error ** 2 - systematic ** 2)),
-    systematic,
+    statistical,
+    systematic: Math.sqrt(Math.max(0, mean.error ** 2 - statistical ** 2)),
     inputs,
     note:
       usable.length === 1
