@@ -1,13 +1,15 @@
 import { quantityText } from './format/quantity';
 import { DISPLAY_UNITS } from './format/unit';
-import type { Conditions } from '@/tracking/types';
+
+interface ShownConditions {
+  temperature_K?: number | null;
+  heatFlux_W_m2?: number | null;
+  frameInterval_s?: number | null;
+  pixelSize_m?: number | null;
+}
 
 /** Conditions in one line: `1.85 K, 100 mW/cm², 200 Hz, 6.5 µm/px`; what is not known is left out. */
-export function conditionsWords(
-  conditions: Partial<
-    Pick<Conditions, 'temperature_K' | 'heatFlux_W_m2' | 'frameInterval_s' | 'pixelSize_m'>
-  >,
-): string {
+export function conditionsWords(conditions: ShownConditions): string {
   const words: string[] = [];
   const add = (value: number | null | undefined, unit: string, siPerUnit: number, digits = 4) => {
     if (typeof value === 'number') words.push(quantityText({ value, siPerUnit, unit, digits }));
