@@ -32,7 +32,8 @@ export function linkSpots(
   const limits: LinkLimits = {
     width: size.width,
     height: size.height,
-    frames: size.frames,
+    // A try-out has spots of a few frames only, and densities are per frame looked at.
+    frames: spots.count > 0 ? spots.frame[spots.count - 1] - spots.frame[0] + 1 : 1,
     longestStepPx: recipe.longestStepPx,
     mayVanishFrames: recipe.mayVanishFrames,
   };
