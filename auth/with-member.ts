@@ -142,8 +142,11 @@ async function readBody(request: Request, schema: z.ZodType): Promise<{ body: un
 }
 
 /** Ids in the path that can't be ids are unknown ids: the same 404, and PostgreSQL never sees them. */
-async function plain(params: Promise<Record<string, string | string[] | undefined>>): Promise<Params> {
-  const entries = Object.entries(await params).flatMap(([name, value]): [string, string][] =>
+// A route without parameters in its path is handed none at all.
+async function plain(
+  params: Promise<Record<string, string | string[] | undefined> | undefined>,
+): Promise<Params> {
+  const entries = Object.entries((await params) ?? {}).flatMap(([name, value]): [string, string][] =>
     typeof value === 'string' ? [[name, value]] : [],
   );
   for (const [name, value] of entries) {
