@@ -6,7 +6,7 @@ import {
   type ThreadInterval,
 } from '@/components/ui/interval-thread';
 import { EmptyState } from '@/components/ui/page-states';
-import { Quantity } from '@/components/ui/quantity';
+import { Quantity, Unit } from '@/components/ui/quantity';
 import { Cell, HeadCell, Row, Table } from '@/components/ui/table';
 import { formatCount } from '@/lib/format/count';
 import { quantityText } from '@/lib/format/quantity';
@@ -14,6 +14,8 @@ import { DISPLAY_UNITS } from '@/lib/format/unit';
 import type { DensityEstimate, ResultRow } from '@/lib/views/overview-view';
 
 const { lineDensity, heatFlux } = DISPLAY_UNITS;
+/** Width of the intervals' column, px. */
+const AXIS_PX = 220;
 
 /** Estimates that rest on this recording alone; a prior is drawn hollow. */
 const isPrior = ({ method }: DensityEstimate) => method === 'heat-flux-prior';
@@ -61,11 +63,24 @@ export function ResultTable({ results }: { results: readonly ResultRow[] }) {
   );
 }
 
+/** Decades of the axis over the intervals' column. */
 function AxisEnds({ axis }: { axis: LogAxis }) {
-  const end = (value: number) => value.toExponential(0).replace('e+', ' × 10^');
+  const decades = logGrid(axis).filter((value) =>
+    Number.isInteger(Math.round(Math.log10(value) * 1e9) / 1e9),
+  );
   return (
-    <span className="sr-only">
-      Interval of the line density on an axis from {end(axis.min)} to {end(axis.max)} per square metre
+    <span className="relative block h-4 font-text" style={{ width: AXIS_PX }}>
+      <span className="sr-only">Interval of the line density, logarithmic</span>
+      {decades.map((value) => (
+        <span
+          key={value}
+          aria-hidden="true"
+          className="absolute -translate-x-1/2"
+          style={{ left: Math.round(shareOnLogAxis(value, axis) * AXIS_PX) }}
+        >
+          <Unit>{`10^${Math.round(Math.log10(value))}`}</Unit>
+        </span>
+      ))}
     </span>
   );
 }
@@ -101,6 +116,7 @@ function ResultLine({ result, axis }: { result: ResultRow; axis: LogAxis | null 
         {axis && intervals.length > 0 ? (
           <IntervalThread
             axis={axis}
+            widthPx={AXIS_PX}
             intervals={intervals}
             label={intervals.map((item) => quantityText({ ...item, ...lineDensity })).join(' or ')}
           />

@@ -114,22 +114,22 @@ export const DEMO_CAMPAIGNS: readonly DemoCampaign[] = [
     tags: ['counterflow', 'simulated'],
     runs: [
       counterflowRun(
-        { name: '1.65 K, 20 mW/cm2', notes: 'First run after cooling down; tracers seeded twice.', startedAt: '2026-02-03T09:40:00Z' }, // prettier-ignore
+        { name: 'Run 1, gentle heat', notes: 'First run after cooling down; tracers seeded twice.', startedAt: '2026-02-03T09:40:00Z' }, // prettier-ignore
         counterflow(1.65, 200),
         { key: 'counterflow-165-200', name: 'q200-sheet-a.tif', frames: 100, seed: 1101, events: 2 },
       ),
       counterflowRun(
-        { name: '1.65 K, 40 mW/cm2', notes: '', startedAt: '2026-02-03T11:05:00Z' },
+        { name: 'Run 2, twice the heat', notes: '', startedAt: '2026-02-03T11:05:00Z' },
         counterflow(1.65, 400),
         { key: 'counterflow-165-400', name: 'q400-sheet-a.tif', frames: 100, seed: 1102, events: 4 },
       ),
       counterflowRun(
-        { name: '1.85 K, 30 mW/cm2', notes: '', startedAt: '2026-02-04T10:20:00Z' },
+        { name: 'Run 3, warmer bath', notes: '', startedAt: '2026-02-04T10:20:00Z' },
         counterflow(1.85, 300),
         { key: 'counterflow-185-300', name: 'q300-sheet-a.tif', frames: 100, seed: 1103, events: 6 },
       ),
       counterflowRun(
-        { name: '1.85 K, 60 mW/cm2', notes: 'Sheet as thick as the spacing: compare the estimates with care.', startedAt: '2026-02-04T13:15:00Z' }, // prettier-ignore
+        { name: 'Run 4, warmer and driven hard', notes: 'Sheet as thick as the spacing: compare the estimates with care.', startedAt: '2026-02-04T13:15:00Z' }, // prettier-ignore
         counterflow(1.85, 600),
         { key: 'counterflow-185-600', name: 'q600-sheet-a.tif', frames: 90, seed: 1104, events: 4 },
       ),
@@ -141,7 +141,7 @@ export const DEMO_CAMPAIGNS: readonly DemoCampaign[] = [
     tags: ['grid', 'decay', 'simulated'],
     runs: [
       {
-        name: '1.50 K, one tow',
+        name: 'Tow 1, two looks',
         tags: ['grid'],
         notes: 'Two recordings of the same tow: 2 s and 8 s after the grid has passed.',
         startedAt: '2026-02-17T14:30:00Z',
@@ -152,7 +152,7 @@ export const DEMO_CAMPAIGNS: readonly DemoCampaign[] = [
         ],
       },
       {
-        name: '1.50 K, second tow',
+        name: 'Tow 2, not recorded',
         tags: ['grid'],
         notes: 'The camera did not trigger; only the conditions were noted.',
         startedAt: '2026-02-17T15:10:00Z',
@@ -167,7 +167,7 @@ export const DEMO_CAMPAIGNS: readonly DemoCampaign[] = [
     tags: ['plan'],
     runs: [
       {
-        name: '2.00 K, 300 mW/cm2, as first planned',
+        name: 'Strong counterflow, as first planned',
         tags: ['plan'],
         notes: 'Too fast for this frame interval: see the warnings.',
         startedAt: null,
