@@ -2,6 +2,8 @@ import Link from 'next/link';
 import {
   axisAround,
   IntervalThread,
+  logGrid,
+  shareOnLogAxis,
   type LogAxis,
   type ThreadInterval,
 } from '@/components/ui/interval-thread';
