@@ -1,5 +1,5 @@
 import type { TrackWindowView } from '@/lib/views/analysis-view';
-import { POPULATION_UNKNOWN, type TrackWindow } from '@/models/queries/read-tracks';
+import { POPULATION_UNKNOWN, type TrackWindow } from '@/models/queries/track-window';
 
 /** Hundredths of a pixel are more than a screen shows, and halve what goes over the line. */
 const short = (value: number): number => Math.round(value * 100) / 100;

@@ -1,6 +1,7 @@
 import { mkdtempSync, readdirSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join, relative } from 'node:path';
+import { log } from '@/auth/log';
 import type { RouteHandler } from '@/auth/with-member';
 
 const API_ROOT = join(process.cwd(), 'app', 'api');
@@ -12,7 +13,7 @@ export function webSettings(): { dataDir: string } {
   process.env.BEADLINE_DATA = dataDir;
   process.env.NEXTAUTH_SECRET = 'a secret for tests only';
   process.env.NEXTAUTH_URL = BASE;
-  process.env.BEADLINE_LOG ??= 'silent';
+  log.level = process.env.BEADLINE_LOG ?? 'silent';
   return { dataDir };
 }
 

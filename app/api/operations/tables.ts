@@ -1,11 +1,8 @@
 import { attachment } from '@/app/api/content-disposition';
 import { LabError } from '@/lib/errors';
-import { LINE_END } from '@/lib/tables/csv-chunks';
 import { estimatesJson } from '@/lib/tables/estimates-json';
 import { reconnectionsCsv } from '@/lib/tables/reconnections-csv';
-import type { TableTrack } from '@/lib/tables/track-rows';
-import { TRACKS_COLUMNS, trackCsvRows } from '@/lib/tables/tracks-csv';
-import { VELOCITIES_COLUMNS, velocityCsvRows } from '@/lib/tables/velocities-csv';
+import { streamTracksCsv, streamVelocitiesCsv } from '@/lib/tables/stream-tables';
 import { velocityPdfCsv } from '@/lib/tables/velocity-pdf-csv';
 import { readOrder, readReconnections } from '@/models/queries/analysis-outcome';
 import { streamTracks } from '@/models/queries/read-tracks';
@@ -34,40 +31,19 @@ async function orderOf({ labId, analysisId }: TableRequest) {
   return { conditions: order.conditions, recipe: order.recipe };
 }
 
-/** Pieces are handed on at about this many characters. */
-const PIECE_CHARACTERS = 1 << 16;
-
-/** Header and rows of all tracks, joined into larger pieces; a few tracks at most are in memory. */
-async function* piecesOf(
-  columns: string,
-  tracks: AsyncIterable<TableTrack>,
-  rowsOf: (track: TableTrack) => Iterable<string>,
-): AsyncGenerator<string> {
-  let piece = columns + LINE_END;
-  for await (const track of tracks) {
-    for (const row of rowsOf(track)) {
-      piece += row + LINE_END;
-      if (piece.length < PIECE_CHARACTERS) continue;
-      yield piece;
-      piece = '';
-    }
-  }
-  if (piece !== '') yield piece;
-}
-
 export async function tracksTable(request: TableRequest): Promise<Pieces> {
   const revision = await revisionFor(request);
   const { conditions } = await orderOf(request);
-  return piecesOf(TRACKS_COLUMNS, streamTracks(request.labId, request.analysisId, revision), (track) =>
-    trackCsvRows(track, conditions),
-  );
+  return streamTracksCsv(streamTracks(request.labId, request.analysisId, revision), conditions);
 }
 
 export async function velocitiesTable(request: TableRequest): Promise<Pieces> {
   const revision = await revisionFor(request);
   const { conditions, recipe } = await orderOf(request);
-  return piecesOf(VELOCITIES_COLUMNS, streamTracks(request.labId, request.analysisId, revision), (track) =>
-    velocityCsvRows(track, recipe.lagsFrames, conditions),
+  return streamVelocitiesCsv(
+    streamTracks(request.labId, request.analysisId, revision),
+    recipe.lagsFrames,
+    conditions,
   );
 }
 

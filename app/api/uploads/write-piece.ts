@@ -35,6 +35,7 @@ export async function writePiece(
   const response = await passToTus(request, { method, id: row.id, body: body.stream });
   if (checksum) await verify(row.id, checksum, body.isWhole() && response.ok, body.digest());
   const arrived = await arrivedBytes(row.id);
+  if (!body.isWhole() && arrived < row.bytes) throw brokeOff(row, arrived);
   if (!response.ok) await explain(response, row, arrived);
   if (arrived === row.bytes) {
     await finishUpload(row);
@@ -60,6 +61,12 @@ async function verify(id: string, checksum: Checksum, whole: boolean, digest: Bu
     throw new LabError('CHECKSUM_MISMATCH', 'The checksum of this piece differs. Send it again.');
   }
 }
+
+/** The sender has gone or was cut off: seldom read by anyone, and asking again where to go on is the cure. */
+const brokeOff = (row: UploadRow, arrived: number) =>
+  new LabError('OFFSET', `The piece broke off: ${arrived} bytes have arrived. Go on from there.`, {
+    headers: { ...headersOf(row), 'Upload-Offset': String(arrived) },
+  });
 
 /** Says why nothing, or not all, could be written; what has arrived counts. */
 async function explain(response: Response, row: UploadRow, arrived: number): Promise<never> {

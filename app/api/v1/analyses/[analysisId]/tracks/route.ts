@@ -2,7 +2,7 @@ import { memberRoute, methods } from '@/app/api/member-route';
 import { trackWindowView } from '@/app/api/track-window-view';
 import { notFound } from '@/lib/errors';
 import { assertTracks } from '@/models/queries/read-results';
-import { trackWindow } from '@/models/queries/read-tracks';
+import { trackWindow } from '@/models/queries/track-window';
 
 export const dynamic = 'force-dynamic';
 
