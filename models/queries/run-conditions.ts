@@ -1,20 +1,28 @@
+import { runHeatFlux } from '@/tracking/flow/run-heat-flux';
 import type { Conditions } from '@/tracking/types';
 import type { Run } from '../run';
 
 /**
  * The conditions that an analysis of a recording of the run is computed with; null while pixel size
- * or frame interval are unknown, without which no length and no velocity can be told.
+ * or frame interval are unknown, without which no length and no velocity can be told. The heat flux
+ * is what is left after the heat leak, and nothing where heat does not drive the flow.
  */
 export function conditionsOfRun(run: Run): Conditions | null {
   const { pixelSizeM, frameIntervalS } = run;
   if (pixelSizeM === null || frameIntervalS === null) return null;
+  const { heatFluxWM2 } = runHeatFlux({
+    drive: run.drive,
+    heatFlux_W_m2: run.heatFluxWM2,
+    heatLeak_W: run.heatLeakW,
+    channel: run.channel,
+  });
   return {
     pixelSize_m: pixelSizeM,
     frameInterval_s: frameIntervalS,
     exposure_s: run.exposureS,
     sheetThickness_m: run.sheetThicknessM,
     temperature_K: run.temperatureK,
-    heatFlux_W_m2: run.heatFluxWM2,
+    heatFlux_W_m2: heatFluxWM2,
     flowDirection: run.flowDirection,
     tracer: run.tracer,
   };
