@@ -35,7 +35,14 @@ export function RecordingTable({ runId }: { runId: string }) {
       <Answer query={list.query} what="the recordings">
         {({ items }) =>
           items.length === 0 ? (
-            <EmptyState>
+            <EmptyState
+              hint={
+                <>
+                  Nothing at hand? Take the <a href="/sample/counterflow-sample.tif">sample stack</a> and its{' '}
+                  <a href="/sample/conditions.json">conditions</a>.
+                </>
+              }
+            >
               No recordings in this run yet. Drop a TIFF stack or a folder of frames above.
             </EmptyState>
           ) : (
