@@ -55,3 +55,29 @@ export function decodePoints(
   const flagsAt = HEAD_BYTES + 4 * floats.length;
   into.flags.set(bytes.subarray(flagsAt + skip, flagsAt + skip + count), at);
 }
+
+const countSql = (points: string) => `((octet_length(${points}) - ${HEAD_BYTES}) / ${POINT_BYTES})`;
+
+/**
+ * SQL for the part of a blob that drawing needs and nothing else: number of points
+ * (32 bits, big-endian as PostgreSQL sends it), x, y, flags. See `decodePositions`.
+ */
+export const positionsSql = (points: string): string =>
+  `int4send(${countSql(points)}) || substring(${points} FROM ${HEAD_BYTES + 1} FOR 8 * ${countSql(points)})
+    || substring(${points} FROM ${HEAD_BYTES + 1} + 4 * ${FLOATS.length} * ${countSql(points)})`;
+
+/** Positions of a track in a block. */
+export interface BlockPositions {
+  count: number;
+  /** `x0, x1, ..., y0, y1, ...` */
+  xyPx: Float32Array;
+  flags: Uint8Array;
+}
+
+/** Reads what `positionsSql` made. */
+export function decodePositions(bytes: Buffer): BlockPositions {
+  const count = bytes.readInt32BE(0);
+  const xyPx = new Float32Array(2 * count);
+  new Uint8Array(xyPx.buffer).set(bytes.subarray(4, 4 + 8 * count));
+  return { count, xyPx, flags: bytes.subarray(4 + 8 * count) };
+}

@@ -1,0 +1,122 @@
+import { queryArrays, withRawClient } from '../raw-client';
+import { blockOf, decodePositions, positionsSql, type BlockPositions } from './point-blob';
+import { currentTracksRevision, validRows } from './tracks-revision';
+
+/** Tracks of a window of frames. Points of entry `i` are `start[i] .. start[i + 1] - 1`, frame by frame. */
+export interface TrackWindow {
+  count: number;
+  /** Numbers of the tracks, ascending. */
+  track: Uint32Array;
+  /** Codes of tracking/types POPULATIONS; 255 where not known. */
+  population: Uint8Array;
+  /** NaN where not known. */
+  pTrapped: Float32Array;
+  /** Length count + 1. */
+  start: Uint32Array;
+  frame: Uint32Array;
+  xPx: Float32Array;
+  yPx: Float32Array;
+  flags: Uint8Array;
+}
+
+/** Code of a population that was not told. */
+export const POPULATION_UNKNOWN = 255;
+
+/** The points of one track in one block that lie in the window. */
+interface Piece {
+  number: number;
+  /** Frame of the first point that lies in the window, and its place in the block. */
+  frame: number;
+  skip: number;
+  count: number;
+  positions: BlockPositions;
+}
+
+/**
+ * What is seen of the tracks in frames `from` to `to`, both included.
+ * @param revision of the tracks, the current one when left out; 0 is what linking made
+ * @returns null when there is no such analysis in the laboratory.
+ */
+export async function trackWindow(
+  labId: string,
+  analysisId: string,
+  from: number,
+  to: number,
+  revision?: number,
+): Promise<TrackWindow | null> {
+  const current = await currentTracksRevision(labId, analysisId);
+  if (current === null) return null;
+  return withRawClient(async (client) => {
+    const place = [analysisId, revision ?? current];
+    const blocks = await queryArrays<BlockRow>(
+      client,
+      `SELECT p.number, p.first_frame, ${positionsSql('p.points')} FROM track_points p
+       WHERE p.analysis_id = $1 AND p.block BETWEEN $3 AND $4 AND ${validRows('p')}`,
+      [...place, blockOf(from), blockOf(to)],
+    );
+    const pieces = piecesOf(blocks, from, to);
+    const numbers = Array.from(new Set(pieces.map(({ number }) => number)));
+    // Numbers follow first frames, so those of a window lie close together: a range, not a list of thousands.
+    const populations = await queryArrays<PopulationRow>(
+      client,
+      `SELECT t.number, t.population, t.p_trapped FROM tracks t
+       WHERE t.analysis_id = $1 AND t.number BETWEEN $3 AND $4 AND t.first_frame <= $5 AND t.last_frame >= $6
+         AND ${validRows('t')}`,
+      [...place, numbers[0] ?? 0, numbers.at(-1) ?? -1, to, from],
+    );
+    return packWindow(pieces, numbers, populations);
+  });
+}
+
+/** Number of the track, frame of the first point of the block, its positions. */
+type BlockRow = [number, number, Buffer];
+type PopulationRow = [number, number | null, number | null];
+
+function piecesOf(blocks: readonly BlockRow[], from: number, to: number): Piece[] {
+  const pieces: Piece[] = [];
+  for (const [number, firstFrame, bytes] of blocks) {
+    const positions = decodePositions(bytes);
+    const skip = Math.max(0, from - firstFrame);
+    const count = Math.min(positions.count, to - firstFrame + 1) - skip;
+    if (count > 0) pieces.push({ number, frame: firstFrame + skip, skip, count, positions });
+  }
+  return pieces.sort((a, b) => a.number - b.number || a.frame - b.frame);
+}
+
+function packWindow(
+  pieces: readonly Piece[],
+  numbers: readonly number[],
+  populations: readonly PopulationRow[],
+): TrackWindow {
+  const count = numbers.length;
+  const total = pieces.reduce((sum, piece) => sum + piece.count, 0);
+  const window: TrackWindow = {
+    count,
+    track: Uint32Array.from(numbers),
+    population: new Uint8Array(count).fill(POPULATION_UNKNOWN),
+    pTrapped: new Float32Array(count).fill(Number.NaN),
+    start: new Uint32Array(count + 1).fill(total),
+    frame: new Uint32Array(total),
+    xPx: new Float32Array(total),
+    yPx: new Float32Array(total),
+    flags: new Uint8Array(total),
+  };
+  const entryOf = new Map(numbers.map((number, entry) => [number, entry]));
+  for (const [number, population, pTrapped] of populations) {
+    const entry = entryOf.get(number);
+    if (entry === undefined) continue;
+    window.population[entry] = population ?? POPULATION_UNKNOWN;
+    window.pTrapped[entry] = pTrapped ?? Number.NaN;
+  }
+  let at = 0;
+  for (const { number, frame, skip, count: points, positions } of pieces) {
+    const entry = entryOf.get(number)!;
+    window.start[entry] = Math.min(window.start[entry], at);
+    window.xPx.set(positions.xyPx.subarray(skip, skip + points), at);
+    window.yPx.set(positions.xyPx.subarray(positions.count + skip, positions.count + skip + points), at);
+    window.flags.set(positions.flags.subarray(skip, skip + points), at);
+    for (let k = 0; k < points; k++) window.frame[at + k] = frame + k;
+    at += points;
+  }
+  return window;
+}
