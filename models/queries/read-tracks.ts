@@ -2,10 +2,17 @@ import type { TableTrack } from '@/lib/tables/track-rows';
 import type { Tracks } from '@/tracking/types';
 import { queryArrays, withRawClient } from '../raw-client';
 import { decodePoints, pointCount, type BlockPoints } from './point-blob';
-import { validRows } from './tracks-revision';
+import { currentTracksRevision, validRows } from './tracks-revision';
 
-/** Number of the track, first frame and points of one block, population and probability of the track, block. */
-type PointsRow = [number, number, Buffer, number | null, number | null, number];
+/** Number of the track, block, its first frame, its points. */
+type PointsRow = [number, number, number, Buffer];
+/** Number of the track, its population, its probability of being trapped. */
+type PopulationRow = [number, number | null, number | null];
+
+interface Batch {
+  points: PointsRow[];
+  populations: Map<number, PopulationRow>;
+}
 
 function emptyPoints(count: number): BlockPoints {
   return {
@@ -32,49 +39,65 @@ export async function* streamTracks(
   analysisId: string,
   revision: number,
 ): AsyncGenerator<TableTrack> {
+  if ((await currentTracksRevision(labId, analysisId)) === null) return;
   let after = { number: -1, block: -1 };
   let open: PointsRow[] = [];
+  let population: PopulationRow | undefined;
   for (;;) {
-    const rows = await withRawClient((client) =>
-      queryArrays<PointsRow>(
-        client,
-        `SELECT p.number, p.first_frame, p.points, t.population, t.p_trapped, p.block
-         FROM (SELECT * FROM track_points p
-               WHERE p.analysis_id = $1 AND (p.number, p.block) > ($3, $4) AND ${validRows('p')}
-                 AND EXISTS (SELECT FROM analyses WHERE id = $1 AND lab_id = $5)
-               ORDER BY p.number, p.block LIMIT ${BATCH}) p
-         JOIN tracks t ON t.analysis_id = $1 AND t.number = p.number AND ${validRows('t')}
-         ORDER BY p.number, p.block`,
-        [analysisId, revision, after.number, after.block, labId],
-      ),
-    );
-    for (const row of rows) {
+    const { points, populations } = await readBatch(analysisId, revision, after);
+    for (const row of points) {
       if (open.length > 0 && open[0][0] !== row[0]) {
-        yield trackOf(open);
+        yield trackOf(open, population);
         open = [];
       }
+      if (open.length === 0) population = populations.get(row[0]);
       open.push(row);
     }
-    const last = rows.at(-1);
-    if (!last || rows.length < BATCH) break;
-    after = { number: last[0], block: last[5] };
+    const last = points.at(-1);
+    if (!last || points.length < BATCH) break;
+    after = { number: last[0], block: last[1] };
   }
-  if (open.length > 0) yield trackOf(open);
+  if (open.length > 0) yield trackOf(open, population);
 }
 
-function trackOf(rows: readonly PointsRow[]): TableTrack {
-  const counts = rows.map((row) => pointCount(row[2]));
+// Two plain ranges of an index each: a join would be at the mercy of statistics that fresh rows don't have yet.
+function readBatch(
+  analysisId: string,
+  revision: number,
+  after: { number: number; block: number },
+): Promise<Batch> {
+  return withRawClient(async (client) => {
+    const points = await queryArrays<PointsRow>(
+      client,
+      `SELECT p.number, p.block, p.first_frame, p.points FROM track_points p
+       WHERE p.analysis_id = $1 AND (p.number, p.block) > ($3, $4) AND ${validRows('p')}
+       ORDER BY p.number, p.block LIMIT ${BATCH}`,
+      [analysisId, revision, after.number, after.block],
+    );
+    if (points.length === 0) return { points, populations: new Map() };
+    const rows = await queryArrays<PopulationRow>(
+      client,
+      `SELECT t.number, t.population, t.p_trapped FROM tracks t
+       WHERE t.analysis_id = $1 AND t.number BETWEEN $3 AND $4 AND ${validRows('t')}`,
+      [analysisId, revision, points[0][0], points.at(-1)![0]],
+    );
+    return { points, populations: new Map(rows.map((row) => [row[0], row])) };
+  });
+}
+
+function trackOf(rows: readonly PointsRow[], populationRow: PopulationRow | undefined): TableTrack {
+  const counts = rows.map((row) => pointCount(row[3]));
   const total = counts.reduce((sum, count) => sum + count, 0);
   const points = emptyPoints(total);
-  const firstFrame = rows[0][1];
+  const [track, , firstFrame] = rows[0];
   let at = 0;
   rows.forEach((row, i) => {
-    decodePoints(row[2], 0, counts[i], points, at);
+    decodePoints(row[3], 0, counts[i], points, at);
     at += counts[i];
   });
-  const [number, , , population, pTrapped] = rows[0];
+  const [, population, pTrapped] = populationRow ?? [track, null, null];
   return {
-    track: number,
+    track,
     frame: Uint32Array.from({ length: total }, (_, i) => firstFrame + i),
     ...points,
     population,
