@@ -47,7 +47,8 @@ export function AnalysisSheet({
   const { data: analysis = initial, isError } = useProgress(initial.id, initial);
   const measures = useMeasures(initial.id, analysis.state);
   const candidates = useCandidates(initial.id, analysis.state);
-  const store = useViewerStore(recording.frames, recording);
+  // Opened in the middle, where tracks have a past to show.
+  const store = useViewerStore(recording.frames, { ...recording, frame: Math.floor(recording.frames / 2) });
   const chosenTrack = useViewer(store, (state) => state.chosenTrack);
   const chosenEvent = useViewer(store, (state) => state.chosenEvent);
   const [well, setWell] = useState<HTMLDivElement | null>(null);

@@ -59,7 +59,7 @@ export function CandidatesSection({ candidates, pairs, chosen, onChoose, onShow 
               <Table label="Reconnection candidates" density="dense">
                 <thead>
                   <tr>
-                    <HeadCell>Event</HeadCell>
+                    <HeadCell className="pl-2">Event</HeadCell>
                     <HeadCell numeric unit="s">
                       <i>t</i>
                       <sub>0</sub>
@@ -110,7 +110,7 @@ function CandidateRow({ candidate, chosen, onChoose }: CandidateRowProps) {
   const { event, t0_s, trackA, trackB, minSeparation_m, qValue, accepted, failed } = candidate;
   return (
     <Row selected={chosen}>
-      <Cell head className="tabular-nums">
+      <Cell head className="pl-2 tabular-nums">
         {formatCount(event)}
       </Cell>
       <Cell numeric>{t0_s.toFixed(3)}</Cell>

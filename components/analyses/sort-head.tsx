@@ -20,7 +20,7 @@ export function SortHead({ field, sort, onSort, unit, numeric, narrow, children 
     <th
       scope="col"
       aria-sort={current ?? 'none'}
-      className={`border-b border-ink pb-[5px] pr-4 pt-[6px] align-bottom text-small font-strong text-ink-2 last:pr-0 ${numeric ? 'text-right' : 'text-left'} ${narrow === 'hide' ? 'max-hand:hidden' : ''}`}
+      className={`border-b border-ink pb-[5px] pr-4 pt-[6px] align-bottom text-small font-strong text-ink-2 first:pl-2 last:pr-0 ${numeric ? 'text-right' : 'text-left'} ${narrow === 'hide' ? 'max-hand:hidden' : ''}`}
     >
       <button
         type="button"

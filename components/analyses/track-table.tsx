@@ -126,7 +126,7 @@ interface TrackRowProps {
 function TrackRow({ row, chosen, onShow }: TrackRowProps) {
   return (
     <Row selected={chosen}>
-      <Cell head className="tabular-nums">
+      <Cell head className="pl-2 tabular-nums">
         {formatCount(row.track)}
       </Cell>
       <Cell numeric>{formatCount(row.firstFrame)}</Cell>

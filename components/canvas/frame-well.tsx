@@ -19,7 +19,6 @@ export interface OverlayScene {
   view: ViewBox;
   well: Size;
   colours: WellColours;
-  pixelRatio: number;
 }
 
 interface FrameWellProps {
@@ -147,12 +146,13 @@ export function FrameWell(props: FrameWellProps) {
       view: state.view,
       well: wellSize.current,
       colours: colours.current,
-      pixelRatio: window.devicePixelRatio,
     });
   };
 
   return (
-    <div className={`relative overflow-hidden border border-well-edge bg-well ${heightClass}`}>
+    <div
+      className={`relative overflow-hidden border border-well-edge bg-well has-[[role=application]:focus-visible]:outline-2 has-[[role=application]:focus-visible]:outline-offset-2 has-[[role=application]:focus-visible]:outline-violet ${heightClass}`}
+    >
       <WellSurface
         holder={holder}
         store={store}
@@ -216,7 +216,7 @@ function WellSurface({
       aria-describedby={describedBy}
       tabIndex={0}
       onKeyDown={onKeyDown}
-      className={`absolute inset-0 cursor-crosshair outline-offset-[-2px] select-none ${zoomed ? 'touch-none' : 'touch-pan-y'}`}
+      className={`absolute inset-0 cursor-crosshair outline-none select-none ${zoomed ? 'touch-none' : 'touch-pan-y'}`}
     >
       {children}
     </div>

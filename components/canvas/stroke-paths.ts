@@ -7,25 +7,20 @@ export interface PathSink {
   closePath(): void;
 }
 
-/** A polyline on the screen: `x[i], y[i]` for `i < length`. */
+/** A polyline on the screen: points `from .. to - 1` of flat lists. */
 export interface ScreenLine {
-  length: number;
   x: Float32Array;
   y: Float32Array;
+  from: number;
+  to: number;
 }
 
-export const createScreenLine = (capacity: number): ScreenLine => ({
-  length: 0,
-  x: new Float32Array(capacity),
-  y: new Float32Array(capacity),
-});
-
 /** Adds the line as an open path. */
-export function linePath(sink: PathSink, line: ScreenLine): void {
-  sink.moveTo(line.x[0], line.y[0]);
+export function linePath(sink: PathSink, { x, y, from, to }: ScreenLine): void {
+  sink.moveTo(x[from], y[from]);
   // A single point still shows as a dot of the stroke's width.
-  if (line.length === 1) sink.lineTo(line.x[0] + 0.01, line.y[0]);
-  for (let i = 1; i < line.length; i += 1) sink.lineTo(line.x[i], line.y[i]);
+  if (to - from === 1) sink.lineTo(x[from] + 0.01, y[from]);
+  for (let i = from + 1; i < to; i += 1) sink.lineTo(x[i], y[i]);
 }
 
 /**
@@ -33,22 +28,22 @@ export function linePath(sink: PathSink, line: ScreenLine): void {
  *
  * @param extraPx added all round: the casing is the same shape grown by it.
  */
-export function taperPath(sink: PathSink, line: ScreenLine, extraPx: number, scale = 1): void {
-  const n = line.length - 1;
-  if (n < 1) return dotPath(sink, line.x[0], line.y[0], (TAPER_HEAD_PX / 2) * scale + extraPx);
-  const half = (i: number) =>
-    ((TAPER_TAIL_PX + ((TAPER_HEAD_PX - TAPER_TAIL_PX) * i) / n) / 2) * scale + extraPx;
-  const [sx, sy] = direction(line, 0);
-  const [ex, ey] = direction(line, n);
-  sink.moveTo(line.x[0] - sx * extraPx, line.y[0] - sy * extraPx);
-  for (let i = 0; i <= n; i += 1) {
-    const [ux, uy] = direction(line, i);
-    sink.lineTo(line.x[i] - uy * half(i), line.y[i] + ux * half(i));
+export function taperPath(sink: PathSink, line: ScreenLine, extraPx: number): void {
+  const { x, y, from, to } = line;
+  const last = to - 1;
+  if (last <= from) return dotPath(sink, x[from], y[from], TAPER_HEAD_PX / 2 + extraPx);
+  const grow = (TAPER_HEAD_PX - TAPER_TAIL_PX) / (last - from);
+  const half = (i: number) => (TAPER_TAIL_PX + grow * (i - from)) / 2 + extraPx;
+  setDirection(line, from);
+  sink.moveTo(x[from] - ux * extraPx, y[from] - uy * extraPx);
+  for (let i = from; i <= last; i += 1) {
+    setDirection(line, i);
+    sink.lineTo(x[i] - uy * half(i), y[i] + ux * half(i));
   }
-  sink.lineTo(line.x[n] + ex * (extraPx + scale), line.y[n] + ey * (extraPx + scale));
-  for (let i = n; i >= 0; i -= 1) {
-    const [ux, uy] = direction(line, i);
-    sink.lineTo(line.x[i] + uy * half(i), line.y[i] - ux * half(i));
+  sink.lineTo(x[last] + ux * (extraPx + 1), y[last] + uy * (extraPx + 1));
+  for (let i = last; i >= from; i -= 1) {
+    setDirection(line, i);
+    sink.lineTo(x[i] + uy * half(i), y[i] - ux * half(i));
   }
   sink.closePath();
 }
@@ -61,34 +56,34 @@ function dotPath(sink: PathSink, x: number, y: number, r: number): void {
   sink.closePath();
 }
 
+// Written by `setDirection`: a pair made anew for each of a hundred thousand points a second would
+// be as many things to collect.
+let ux = 1;
+let uy = 0;
+
 /** Unit vector along the line at point `i`, from its neighbours; along x where they coincide. */
-function direction(line: ScreenLine, i: number): [number, number] {
-  const a = Math.max(0, i - 1);
-  const b = Math.min(line.length - 1, i + 1);
-  const dx = line.x[b] - line.x[a];
-  const dy = line.y[b] - line.y[a];
-  const length = Math.hypot(dx, dy);
-  return length > 1e-6 ? [dx / length, dy / length] : [1, 0];
+function setDirection({ x, y, from, to }: ScreenLine, i: number): void {
+  const a = i > from ? i - 1 : i;
+  const b = i < to - 1 ? i + 1 : i;
+  const dx = x[b] - x[a];
+  const dy = y[b] - y[a];
+  const length = Math.sqrt(dx * dx + dy * dy);
+  ux = length > 1e-6 ? dx / length : 1;
+  uy = length > 1e-6 ? dy / length : 0;
 }
 
 /**
  * Places beads along the line, one every `BEAD_STEP_PX` counted back from the newest point, which
  * always carries one: so the bead sits on the tracer and the others trail behind.
  */
-export function placeBeads(line: ScreenLine, scale: number, place: (x: number, y: number) => void): void {
-  const step = BEAD_STEP_PX * scale;
-  let due = 0;
-  for (let i = line.length - 1; i > 0; i -= 1) {
-    const dx = line.x[i - 1] - line.x[i];
-    const dy = line.y[i - 1] - line.y[i];
-    const length = Math.hypot(dx, dy);
-    while (due <= length) {
-      const share = length > 0 ? due / length : 0;
-      place(line.x[i] + dx * share, line.y[i] + dy * share);
-      due += step;
-      if (length === 0) break;
-    }
+export function placeBeads({ x, y, from, to }: ScreenLine, place: (x: number, y: number) => void): void {
+  place(x[to - 1], y[to - 1]);
+  let due = BEAD_STEP_PX;
+  for (let i = to - 1; i > from; i -= 1) {
+    const dx = x[i - 1] - x[i];
+    const dy = y[i - 1] - y[i];
+    const length = Math.sqrt(dx * dx + dy * dy);
+    for (; due <= length; due += BEAD_STEP_PX) place(x[i] + (dx * due) / length, y[i] + (dy * due) / length);
     due -= length;
   }
-  if (line.length === 1) place(line.x[0], line.y[0]);
 }

@@ -19,7 +19,7 @@ export function drawTrackOverlay(
   block: TrackBlock | null,
   marks: readonly PairMark[],
 ): void {
-  const { ctx, state, view, well, colours, pixelRatio } = scene;
+  const { ctx, state, view, well, colours } = scene;
   const frame = state.shown;
   if (block) {
     drawTracks(ctx, block, {
@@ -29,7 +29,6 @@ export function drawTrackOverlay(
       well,
       colours,
       chosen: state.chosenTrack,
-      pixelRatio,
     });
   }
   const near = marks

@@ -78,13 +78,12 @@ export function ViewerPanel(props: ViewerPanelProps) {
     <div>
       <div
         ref={frame}
-        className="-mx-sheet-x-narrow hand:mx-0"
+        className="max-hand:-mx-sheet-x-narrow hand:w-full"
         // As high as the picture at this width asks for, but never higher than leaves room to work.
         style={{
           aspectRatio: `${recording.width} / ${recording.height}`,
           maxHeight: 'min(62vh, 620px)',
           minHeight: 240,
-          width: 'auto',
         }}
       >
         <FrameWell

@@ -16,7 +16,7 @@ export function TryAnswers({ answer, shown, onFrame }: TryAnswersProps) {
     <Table label="Spots and noise per frame" density="dense">
       <thead>
         <tr>
-          <HeadCell>Frame</HeadCell>
+          <HeadCell className="pl-2">Frame</HeadCell>
           <HeadCell numeric>Spots</HeadCell>
           <HeadCell numeric unit="e r.m.s.">
             Noise
@@ -29,7 +29,7 @@ export function TryAnswers({ answer, shown, onFrame }: TryAnswersProps) {
       <tbody>
         {answer.frames.map(({ frame, noise_e, spots }) => (
           <Row key={frame} selected={frame === shown}>
-            <Cell head>
+            <Cell head className="pl-2">
               <button
                 type="button"
                 onClick={() => onFrame(frame)}

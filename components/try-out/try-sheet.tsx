@@ -58,11 +58,11 @@ export function TrySheet({ recording, startReason }: TrySheetProps) {
     if (!frames.includes(store.get().frame)) store.goTo(frames[0]);
   }, [frames, store]);
 
-  const drawOverlay = ({ ctx, state, view, well, colours, pixelRatio }: OverlayScene) => {
+  const drawOverlay = ({ ctx, state, view, well, colours }: OverlayScene) => {
     const found = answer?.frames.find((one) => one.frame === state.shown);
     if (!answer || !found) return;
     if (block) {
-      const options = { frame: state.shown, trailFrames: TRY_FRAMES_MOST, view, well, colours, pixelRatio };
+      const options = { frame: state.shown, trailFrames: TRY_FRAMES_MOST, view, well, colours };
       drawTracks(ctx, block, { ...options, chosen: null });
     }
     drawSpots(ctx, found.spots, view, well, answer.imageFacts.spotSigmaPx);

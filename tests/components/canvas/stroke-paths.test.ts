@@ -1,22 +1,20 @@
 import { describe, expect, it } from 'vitest';
-import { createScreenLine, placeBeads, taperPath } from '@/components/canvas/stroke-paths';
+import { placeBeads, taperPath, type ScreenLine } from '@/components/canvas/stroke-paths';
 import { expectWithin } from '@/tests/helpers/expect-within';
 
-function line(points: [number, number][]) {
-  const shape = createScreenLine(points.length);
-  points.forEach(([x, y], i) => {
-    shape.x[i] = x;
-    shape.y[i] = y;
-  });
-  shape.length = points.length;
-  return shape;
-}
+// Stands behind other points, as lines do in the shared lists.
+const line = (points: [number, number][]): ScreenLine => ({
+  x: Float32Array.from([99, ...points.map(([x]) => x)]),
+  y: Float32Array.from([99, ...points.map(([, y]) => y)]),
+  from: 1,
+  to: points.length + 1,
+});
 
 describe('strokes on images', () => {
   // Distances and widths are those of the product's own table of strokes.
   it('carry a bead on the newest point and one every 7 px of path behind it', () => {
     const beads: [number, number][] = [];
-    placeBeads(line([[0, 0], [10, 0], [10, 12]]), 1, (x, y) => beads.push([x, y])); // prettier-ignore
+    placeBeads(line([[0, 0], [10, 0], [10, 12]]), (x, y) => beads.push([x, y])); // prettier-ignore
     expect(beads[0]).toEqual([10, 12]);
     expect(beads).toHaveLength(4);
     // Path length 22: beads at 0, 7, 14 and 21 from the newest point.
@@ -29,9 +27,9 @@ describe('strokes on images', () => {
 
   it('show a track of one point as one bead, and standing points without end', () => {
     const beads: number[] = [];
-    placeBeads(line([[3, 4]]), 1, (x) => beads.push(x));
+    placeBeads(line([[3, 4]]), (x) => beads.push(x));
     expect(beads).toEqual([3]);
-    placeBeads(line([[3, 4], [3, 4], [3, 4]]), 1, (x) => beads.push(x)); // prettier-ignore
+    placeBeads(line([[3, 4], [3, 4], [3, 4]]), (x) => beads.push(x)); // prettier-ignore
     expect(beads.length).toBeLessThan(5);
   });
 

@@ -1,0 +1,53 @@
+import { describe, expect, it } from 'vitest';
+import { projectTrails } from '@/components/canvas/projected-trails';
+import { trailAt } from '@/components/canvas/track-block';
+import { expectWithin } from '@/tests/helpers/expect-within';
+import { randomBlock } from './random-block';
+
+const well = { width: 300, height: 200 };
+
+describe('trails on the screen', () => {
+  it('begin and end where the tracks do, and leave out no bend wider than the merging distance', () => {
+    const block = randomBlock(8, 80, 40);
+    const view = { scale: 1.7, offsetX: -60, offsetY: 12 };
+    const trail = { first: 0, last: 0 };
+    const { count, index, start, x, y } = projectTrails(block, 25, 15, view, well);
+    expect(count).toBeGreaterThan(5);
+    for (let i = 0; i < count; i += 1) {
+      expect(trailAt(block, index[i], 25, 15, trail)).toBe(true);
+      expectWithin(x[start[i + 1] - 1], block.x[trail.last] * 1.7 - 60, { abs: 1e-3 });
+      expectWithin(y[start[i]], block.y[trail.first] * 1.7 + 12, { abs: 1e-3 });
+      for (let k = trail.first; k <= trail.last; k += 1) {
+        const [px, py] = [block.x[k] * 1.7 - 60, block.y[k] * 1.7 + 12];
+        let nearest = Infinity;
+        for (let p = start[i]; p < start[i + 1]; p += 1) {
+          nearest = Math.min(nearest, Math.max(Math.abs(x[p] - px), Math.abs(y[p] - py)));
+        }
+        expect(nearest).toBeLessThan(4);
+      }
+    }
+  });
+
+  it('are those of all tracks with a point in the well, and of no other far from it', () => {
+    const block = randomBlock(9, 200, 40);
+    const view = { scale: 1, offsetX: -100, offsetY: -50 };
+    const trails = projectTrails(block, 20, 10, view, well);
+    const drawn = new Set(Array.from(trails.index.subarray(0, trails.count)));
+    const trail = { first: 0, last: 0 };
+    for (let i = 0; i < block.count; i += 1) {
+      if (!trailAt(block, i, 20, 10, trail)) {
+        expect(drawn.has(i)).toBe(false);
+        continue;
+      }
+      let distance = Infinity;
+      for (let k = trail.first; k <= trail.last; k += 1) {
+        const [x, y] = [block.x[k] - 100, block.y[k] - 50];
+        const outX = Math.max(0, -x, x - well.width);
+        const outY = Math.max(0, -y, y - well.height);
+        distance = Math.min(distance, Math.max(outX, outY));
+      }
+      if (distance === 0) expect(drawn.has(i)).toBe(true);
+      if (distance > 12) expect(drawn.has(i)).toBe(false);
+    }
+  });
+});
