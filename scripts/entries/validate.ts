@@ -1,0 +1,46 @@
+import { lineDensityTrials, summariseLineDensity } from '@/tracking/studies/line-density';
+import { keepsPromises, studyStandardRecording } from '@/tracking/studies/standard-recording';
+
+/** A study yields one line per case; `kept` is false where a stated promise was broken. */
+type Study = () => Iterable<Record<string, unknown>>;
+
+const SEEDS = [1, 2, 3];
+const TANGLE_SEEDS = Array.from({ length: 12 }, (_, i) => i + 1);
+/** Line densities from a slow counterflow to a dense tangle, m^-2. */
+const LINE_DENSITIES = [1e7, 3e7, 1e8];
+
+const STUDIES: Record<string, Study> = {
+  /** Detection and linking on simulated recordings of known truth; the promises are stated for SNR 4. */
+  *'standard-recording'() {
+    for (const snr of [3, 4, 6]) {
+      for (const seed of SEEDS) {
+        const figures = studyStandardRecording({ snr, seed });
+        yield snr === 4 ? { ...figures, kept: keepsPromises(figures) } : { ...figures };
+      }
+    }
+  },
+  /** Bias, scatter and coverage of each estimator of line density. */
+  *'line-density'() {
+    for (const density of LINE_DENSITIES) {
+      for (const summary of summariseLineDensity(density, lineDensityTrials(density, TANGLE_SEEDS))) {
+        yield { ...summary };
+      }
+    }
+  },
+};
+
+const names = process.argv.slice(2);
+const unknown = names.find((name) => !(name in STUDIES));
+if (unknown !== undefined) {
+  process.stderr.write(`There is no study '${unknown}'. Studies: ${Object.keys(STUDIES).join(', ')}.\n`);
+  process.exit(2);
+}
+
+let broken = 0;
+for (const name of names.length > 0 ? names : Object.keys(STUDIES)) {
+  for (const line of STUDIES[name]()) {
+    if (line.kept === false) broken++;
+    process.stdout.write(`${JSON.stringify({ study: name, ...line })}\n`);
+  }
+}
+process.exit(broken > 0 ? 1 : 0);
