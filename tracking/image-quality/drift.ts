@@ -7,6 +7,8 @@ import { spreadFrames } from './spread-frames';
 const PARTS_MAX = 9;
 /** Odd, so that a median is a value; spread over the whole part, so that tracers move on in between. */
 const FRAMES_PER_PART = 9;
+/** The way straight from the first part and the way over all parts between must end this close, px. */
+const WAYS_AGREE_PX = 1.5;
 
 export type Drift = Pick<ImageQuality, 'drift' | 'driftPx'>;
 
@@ -28,6 +30,15 @@ function partsOf(frames: number): number[][] {
 }
 
 /**
+ * The shift in px where both ways to it agree. Where nothing stays in place the pictures match by
+ * chance, somewhere else each time, and the ways part.
+ */
+function agreed(straight: { x: number; y: number }, walked: { x: number; y: number }, bin: number) {
+  const apart = bin * Math.hypot(straight.x - walked.x, straight.y - walked.y);
+  return apart <= WAYS_AGREE_PX ? { x: straight.x * bin, y: straight.y * bin } : null;
+}
+
+/**
  * How the picture as a whole (windows, walls, edges of the light sheet, what sticks to them) moves against
  * its place in the first part of the stack. Tracers that flow on within a part do not count.
  */
@@ -36,13 +47,19 @@ export function createDriftMeter(width: number, height: number, frames: number):
   const parts = partsOf(frames);
   const shifts: ({ x: number; y: number } | null)[] = [];
   let first: ReturnType<typeof spectrum> | null = null;
+  let before: ReturnType<typeof spectrum> | null = null;
+  // Sum of the steps from part to part; null from the first step on that could not be told.
+  let walked: { x: number; y: number } | null = { x: 0, y: 0 };
   let pictures: Float64Array[] = [];
 
   const close = ({ side, bin }: NonNullable<typeof grid>) => {
     const now = spectrum(medianPicture(pictures), side);
     first ??= now;
-    const cells = pictureShift(first, now, side);
-    shifts.push(cells && { x: cells.x * bin, y: cells.y * bin });
+    const step = pictureShift(before ?? now, now, side);
+    walked = walked && step && { x: walked.x + step.x, y: walked.y + step.y };
+    before = now;
+    const straight = pictureShift(first, now, side);
+    shifts.push(straight && walked && agreed(straight, walked, bin));
     pictures = [];
   };
 

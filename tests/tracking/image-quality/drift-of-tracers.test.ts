@@ -1,0 +1,19 @@
+import { describe, expect, it } from 'vitest';
+import { demoCamera, demoScene } from '@/jobs/demo/make-demo-stack';
+import { createDriftMeter } from '@/tracking/image-quality/drift';
+import { createRenderer } from '@/tracking/simulate/render';
+import { smallConditions, smallScene } from '../../helpers/small-stack';
+
+describe('drift of a picture in which everything flows', () => {
+  it.each([5, 6, 7])('is unknown, not the way from one tracer to another (seed %i)', (seed) => {
+    const scene = { ...smallScene, widthPx: 256, heightPx: 256, frames: 100, trappedInSight: 70, seed };
+    const renderer = createRenderer(demoScene(scene, smallConditions), demoCamera(seed));
+    const meter = createDriftMeter(256, 256, scene.frames);
+    for (let f = 0; f < scene.frames; f++) meter.add(f, Float32Array.from(renderer.renderFrame(f)));
+    const { xPx, yPx } = meter.result().drift;
+    // The simulated camera stands still: whatever is told of it must be near nothing.
+    xPx.forEach((x, i) => {
+      if (x !== null) expect(Math.hypot(x, yPx[i] ?? 0)).toBeLessThan(2);
+    });
+  });
+});
