@@ -1,4 +1,5 @@
 import { stackFolder } from '@/jobs/stack-folder';
+import { LabError } from '@/lib/errors';
 import { openStack, type StackReader } from '@/stacks/open-stack';
 
 /** Stacks kept open for whoever scrubs through them; each costs a few file descriptors. */
@@ -12,7 +13,11 @@ interface Entry {
 const shared = globalThis as unknown as { beadlineStacks?: Map<string, Entry> };
 const entries = (): Map<string, Entry> => (shared.beadlineStacks ??= new Map());
 
-/** Runs the work with the open stack of a recording; `version` tells a stack that was checked anew from the old. */
+/**
+ * Runs the work with the open stack of a recording.
+ * @param version tells a stack that was checked anew from the old
+ * @throws LabError UNAVAILABLE when it can't be opened
+ */
 export async function withStack<T>(
   recordingId: string,
   version: number,
@@ -25,21 +30,24 @@ export async function withStack<T>(
   entries().set(key, entry);
   entry.users += 1;
   try {
-    return await work(await entry.reader);
-  } catch (cause) {
-    if (await failed(entry)) entries().delete(key);
-    throw cause;
+    return await work(await opened(key, entry));
   } finally {
     entry.users -= 1;
     closeOldest();
   }
 }
 
-const failed = (entry: Entry): Promise<boolean> =>
-  entry.reader.then(
-    () => false,
-    () => true,
-  );
+/** A stack that can't be opened is tried again by the next one who asks. */
+async function opened(key: string, entry: Entry): Promise<StackReader> {
+  try {
+    return await entry.reader;
+  } catch (cause) {
+    entries().delete(key);
+    throw new LabError('UNAVAILABLE', "The stored stack can't be opened: it is damaged or missing.", {
+      cause,
+    });
+  }
+}
 
 function closeOldest(): void {
   for (const [key, entry] of entries()) {

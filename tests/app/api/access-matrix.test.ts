@@ -141,10 +141,10 @@ describe('who may do what over HTTP', () => {
     expect(routePaths()).toEqual([...new Set([...keys.map(fileOf), ...OPEN_PATHS, catchAll])].sort());
     for (const file of new Set(keys.map(fileOf))) {
       if (file.includes('[[')) continue;
-      const module = await routeModule(file);
+      const exported = await routeModule(file);
       const known = keys.filter((key) => fileOf(key) === file).map((key) => split(key)[0]);
       for (const method of ['GET', 'POST', 'PUT', 'PATCH', 'DELETE']) {
-        const response = await module[method]!(new Request('http://127.0.0.1/', { method }), {
+        const response = await exported[method]!(new Request('http://127.0.0.1/', { method }), {
           params: Promise.resolve({}),
         });
         // Nobody is signed in: a method that is there asks for that, one that is not says so.
