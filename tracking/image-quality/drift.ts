@@ -73,13 +73,15 @@ export function createDriftMeter(width: number, height: number, frames: number):
       if (pictures.length === part.length) close(grid);
     },
     result() {
-      const known = shifts.slice(1).flatMap((shift) => (shift ? [Math.hypot(shift.x, shift.y)] : []));
+      // What flows is in step for a part or two and is then gone; the camera's own picture lasts to the end.
+      const lasting = shifts.at(-1) ? shifts : shifts.map(() => null);
+      const known = lasting.slice(1).flatMap((shift) => (shift ? [Math.hypot(shift.x, shift.y)] : []));
       return {
         driftPx: known.length > 0 ? Math.max(...known) : null,
         drift: {
           frames: shifts.map((_, i) => parts[i]![parts[i]!.length >> 1]!),
-          xPx: shifts.map((shift) => shift?.x ?? null),
-          yPx: shifts.map((shift) => shift?.y ?? null),
+          xPx: lasting.map((shift) => shift?.x ?? null),
+          yPx: lasting.map((shift) => shift?.y ?? null),
         },
       };
     },
