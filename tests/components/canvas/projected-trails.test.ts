@@ -8,7 +8,7 @@ const well = { width: 300, height: 200 };
 
 describe('trails on the screen', () => {
   it('begin and end where the tracks do, and leave out no bend wider than the merging distance', () => {
-    const block = randomBlock(8, 80, 40);
+    const block = randomBlock(8, 600, 40);
     const view = { scale: 1.7, offsetX: -60, offsetY: 12 };
     const trail = { first: 0, last: 0 };
     const { count, index, start, x, y } = projectTrails(block, 25, 15, view, well);
