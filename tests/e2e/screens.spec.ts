@@ -1,0 +1,139 @@
+import { mkdirSync } from 'node:fs';
+import { join } from 'node:path';
+import { AxeBuilder } from '@axe-core/playwright';
+import type { Browser } from 'playwright-core';
+import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import type { Role } from '@/lib/access';
+import { closeDatabase } from '@/models/database';
+import { makeAnalysedRecording } from '../helpers/analysed-recording';
+import { ApiScript } from '../helpers/api-client';
+import { sharedServer } from '../helpers/server';
+import { makeTestLab, type TestLab } from '../helpers/test-lab';
+import {
+  expectNoSidewaysScroll,
+  launchBrowser,
+  openWindow,
+  signIn,
+  type Theme,
+  WIDTHS,
+} from './support/browser';
+
+const server = sharedServer();
+const SHOTS = join(import.meta.dirname, '..', 'shots');
+const THEMES: Theme[] = ['light', 'dark'];
+const SIZES = Object.keys(WIDTHS) as (keyof typeof WIDTHS)[];
+
+/** Pages by the role that uses them; `ID`s stand for what the laboratory has. */
+const PAGES: Partial<Record<Role, string[]>> = {
+  experimentalist: [
+    '/',
+    '/campaigns',
+    '/campaigns/CAMPAIGN',
+    '/campaigns/CAMPAIGN/runs/new',
+    '/runs/RUN',
+    '/runs/RUN/recordings',
+    '/runs/RUN/analyses',
+    '/recordings/RECORDING',
+    '/recordings/RECORDING/try',
+    '/analyses',
+    '/analyses/ANALYSIS',
+    '/account',
+    '/nowhere',
+  ],
+  annotator: ['/lab/storage'],
+  lab_administrator: ['/', '/lab', '/lab/tokens', '/lab/queue', '/lab/storage'],
+};
+
+let browser: Browser;
+let full: TestLab;
+let empty: TestLab;
+let ids: Record<string, string>;
+
+beforeAll(async () => {
+  mkdirSync(SHOTS, { recursive: true });
+  full = await makeTestLab(server.databaseUrl);
+  empty = await makeTestLab(server.databaseUrl, 'Bare Cellar Test Laboratory');
+  const script = new ApiScript(server.baseUrl, full.people.experimentalist.token);
+  const made = await makeAnalysedRecording(script);
+  ids = {
+    CAMPAIGN: made.campaignId,
+    RUN: made.runId,
+    RECORDING: made.recordingId,
+    ANALYSIS: made.analysisId,
+  };
+  browser = await launchBrowser();
+}, 240_000);
+
+afterAll(async () => {
+  await browser?.close();
+  await closeDatabase();
+});
+
+const addressOf = (page: string) => page.replace(/[A-Z]{3,}/, (name) => ids[name] ?? name);
+
+async function look(
+  lab: TestLab,
+  role: Role,
+  pages: string[],
+  theme: Theme,
+  size: keyof typeof WIDTHS,
+  name: string,
+) {
+  const { context, page, complaints } = await openWindow(browser, { theme, size });
+  await signIn(page, lab.people[role]);
+  for (const path of pages) {
+    complaints.length = 0;
+    await page.goto(addressOf(path), { waitUntil: 'load' });
+    await page.getByRole('main').waitFor();
+    // Bars stand where something loads; the page is looked at when they are gone.
+    await page.waitForFunction(() => document.querySelectorAll('.loading-bars').length === 0, null, {
+      timeout: 20_000,
+    });
+    const file = `${name}-${path.replace(/\W+/g, '-').replace(/^-|-$/g, '') || 'overview'}-${size}-${theme}.png`;
+    await page.screenshot({ path: join(SHOTS, file), fullPage: true });
+    await expectNoSidewaysScroll(page);
+    const { violations } = await new AxeBuilder({ page }).analyze();
+    const serious = violations.filter(({ impact }) => impact === 'serious' || impact === 'critical');
+    const words = serious.map(
+      ({ id, nodes }) => `${id}: ${nodes.map(({ target }) => target.join(' ')).join(' | ')}`,
+    );
+    expect(words, `${path} in ${theme} at ${size}`).toEqual([]);
+    const expected404 = path === '/nowhere' || path === '/lab/storage';
+    const unexpected = complaints.filter((text) => !(expected404 && /40[34]/.test(text)));
+    expect(unexpected, `${path} in ${theme} at ${size}`).toEqual([]);
+  }
+  await context.close();
+}
+
+describe.each(THEMES)('every page in the %s theme', (theme) => {
+  it.each(SIZES)(
+    'has no serious violation and fits its window, %s',
+    async (size) => {
+      for (const [role, pages] of Object.entries(PAGES)) {
+        await look(full, role as Role, pages, theme, size, 'full');
+      }
+    },
+    240_000,
+  );
+
+  it('says what to do where there is nothing yet', async () => {
+    await look(
+      empty,
+      'principal_investigator',
+      ['/', '/campaigns', '/analyses', '/lab/tokens'],
+      theme,
+      'wide',
+      'empty',
+    );
+  }, 60_000);
+
+  it('the sign-in page has no serious violation', async () => {
+    const { context, page } = await openWindow(browser, { theme, size: 'narrow' });
+    await page.goto('/sign-in');
+    await expectNoSidewaysScroll(page);
+    const { violations } = await new AxeBuilder({ page }).analyze();
+    expect(violations.filter(({ impact }) => impact === 'serious' || impact === 'critical')).toEqual([]);
+    await page.screenshot({ path: join(SHOTS, `sign-in-narrow-${theme}.png`) });
+    await context.close();
+  }, 60_000);
+});
