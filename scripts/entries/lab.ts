@@ -3,12 +3,12 @@ import { z } from 'zod';
 import { baseUrl } from '@/lib/env';
 import { newId } from '@/lib/ids';
 import { nameSchema } from '@/lib/schemas/text';
-import { newInvitation } from '@/auth/invitation';
+import { invitationPath, makeInvitation } from '@/auth/invitations';
 import { closeDatabase, getSequelize } from '@/models/database';
 import { models } from '@/models';
 import { selectRow } from '@/models/queries/select';
 import { writeAudit } from '@/models/queries/write-audit';
-import { BadArguments, runCommand } from './command';
+import { BadArguments, runCommand } from '@/lib/command-line';
 
 const USAGE = 'Usage: npm run lab -- --name N --email E';
 
@@ -17,7 +17,7 @@ async function main(): Promise<void> {
   const name = nameSchema.safeParse(values.name);
   const email = z.email().safeParse(values.email);
   if (!name.success || !email.success) throw new BadArguments(USAGE);
-  const { link, invitationHash, invitationExpiresAt } = newInvitation();
+  const invitation = makeInvitation(new Date());
   const isNew = await getSequelize().transaction(async (transaction) => {
     const slug = slugOf(name.data);
     const there = await selectRow('SELECT id FROM labs WHERE slug = $1', [slug], transaction);
@@ -32,7 +32,10 @@ async function main(): Promise<void> {
     const userId = known?.id ?? newId();
     if (!known) {
       const person = { id: userId, email: email.data, name: email.data.split('@')[0] };
-      await User.create({ ...person, invitationHash, invitationExpiresAt }, { transaction });
+      await User.create(
+        { ...person, invitationHash: invitation.hash, invitationExpiresAt: invitation.expiresAt },
+        { transaction },
+      );
     }
     await Membership.create(
       { id: newId(), labId: lab.id, userId, roles: ['principal_investigator', 'lab_administrator'] },
@@ -42,9 +45,9 @@ async function main(): Promise<void> {
     await writeAudit(entry, transaction);
     return !known;
   });
-  process.stdout.write(
-    isNew ? `${baseUrl()}${link}\n` : `${email.data} has an account: ${baseUrl()}/sign-in\n`,
-  );
+  const path = isNew ? invitationPath(invitation.text) : '/sign-in';
+  process.stdout.write(`${baseUrl()}${path}
+`);
 }
 
 /** `Vortex Lab, Turku` becomes `vortex-lab-turku`. */
@@ -52,6 +55,7 @@ function slugOf(name: string): string {
   const slug = name
     .normalize('NFKD')
     .toLowerCase()
+    .replace(/\p{M}/gu, '')
     .replace(/[^a-z0-9]+/g, '-')
     .replace(/^-+|-+$/g, '');
   return slug || newId();

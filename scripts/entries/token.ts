@@ -6,7 +6,7 @@ import { closeDatabase } from '@/models/database';
 import { selectRows } from '@/models/queries/select';
 import { saveToken } from '@/models/queries/tokens';
 import { writeAudit } from '@/models/queries/write-audit';
-import { BadArguments, runCommand } from './command';
+import { BadArguments, runCommand } from '@/lib/command-line';
 
 const USAGE =
   'Usage: npm run --silent token -- --email E --name N [--lab L] [--scopes read,write,review,export]';
