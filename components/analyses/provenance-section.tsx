@@ -1,4 +1,5 @@
 import Link from 'next/link';
+import { Fold } from '@/components/ui/fold';
 import { Moment } from '@/components/ui/moment';
 import { Facts, Section } from '@/components/ui/sheet';
 import { formatDuration } from '@/lib/format/duration';
@@ -54,15 +55,14 @@ export function ProvenanceSection({ analysis, sha256 }: ProvenanceProps) {
             : []),
         ]}
       />
-      <details className="pt-2 text-note">
-        <summary className="inline-flex min-h-6 items-center">The recipe, every value</summary>
+      <Fold title="The recipe, every value" className="pt-2">
         <Facts
           items={RECIPE_WORDS.map((word) => ({
             name: word.label,
             value: [recipeValueText(word, recipe[word.field]), word.unit].filter(Boolean).join(' '),
           }))}
         />
-      </details>
+      </Fold>
     </Section>
   );
 }

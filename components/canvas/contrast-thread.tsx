@@ -79,7 +79,7 @@ export function ContrastThread({ store, recordingId, imageWidth, range, initial 
 
   return (
     <div className="flex min-w-0 flex-wrap items-end gap-x-4 gap-y-1">
-      <div ref={holder} className="min-w-[180px] flex-1">
+      <div ref={holder} className="min-w-[180px] max-w-[480px] flex-1">
         <svg
           width="100%"
           height={HEIGHT_PX}

@@ -2,6 +2,7 @@
 
 import { Button } from '@/components/ui/button';
 import { Segment } from '@/components/ui/choice';
+import { Fold } from '@/components/ui/fold';
 import { useViewer } from './use-viewer';
 import { VIEWER_KEYS } from './viewer-keys';
 import type { ViewerStore } from './viewer-store';
@@ -49,9 +50,8 @@ export function ViewerControls({ store, player, onZoom, onFit, keysId }: ViewerC
         </Button>
         <Button onClick={onFit}>Whole frame</Button>
       </span>
-      <details className="basis-full text-small text-ink-2">
-        <summary className="inline-flex min-h-6 items-center">Keys in the frame</summary>
-        <dl id={keysId} className="flex flex-wrap gap-x-5 gap-y-1 pb-1">
+      <Fold title="Keys in the frame" className="basis-full">
+        <dl id={keysId} className="flex flex-wrap gap-x-5 gap-y-1 pb-1 text-small text-ink-2">
           {VIEWER_KEYS.map(({ keys, does }) => (
             <div key={keys} className="flex gap-[6px]">
               <dt className="text-ink">{keys}</dt>
@@ -59,7 +59,7 @@ export function ViewerControls({ store, player, onZoom, onFit, keysId }: ViewerC
             </div>
           ))}
         </dl>
-      </details>
+      </Fold>
     </div>
   );
 }

@@ -1,6 +1,7 @@
 'use client';
 
 import { useCallback, useId, useMemo, useRef, type ReactNode } from 'react';
+import { Fold } from '@/components/ui/fold';
 import type { TimeLineEvent } from '@/components/ui/time-line-marks';
 import { contrastRange } from './contrast';
 import { ContrastThread } from './contrast-thread';
@@ -120,10 +121,9 @@ export function ViewerPanel(props: ViewerPanelProps) {
       {props.contrastOpen ? (
         contrast
       ) : (
-        <details className="print:hidden">
-          <summary className="inline-flex min-h-6 items-center text-small text-ink-2">Contrast</summary>
+        <Fold title="Contrast" className="print:hidden">
           {contrast}
-        </details>
+        </Fold>
       )}
     </div>
   );

@@ -15,6 +15,12 @@ export function shareText(share: number): string {
 
 const short = (value: number) => String(Number(value.toPrecision(3))).replace('-', '−');
 
+/** A shift in words: where to, and how far. */
+export function driftText({ x, y }: { x: number; y: number }): string {
+  const across = `${short(Math.abs(x))} px ${x < 0 ? 'left' : 'right'}`;
+  return `${across}, ${short(Math.abs(y))} px ${y < 0 ? 'up' : 'down'}`;
+}
+
 /** Image quality and facts of a stack, for the margin of its page. */
 export function QualityNotes({ recording }: { recording: RecordingView }) {
   const { imageQuality, sha256, bytes, bitDepth, metadata } = recording;
@@ -29,7 +35,7 @@ export function QualityNotes({ recording }: { recording: RecordingView }) {
               {
                 name: 'Drift',
                 value: imageQuality.driftPx
-                  ? `${short(imageQuality.driftPx.x)} px right, ${short(imageQuality.driftPx.y)} px down`
+                  ? driftText(imageQuality.driftPx)
                   : 'can’t be told: too little stays in place',
               },
               { name: 'Contrast', value: `${short(imageQuality.low)} to ${short(imageQuality.high)} counts` },

@@ -7,6 +7,7 @@ import { RecipeFields } from '@/components/analyses/recipe-fields';
 import { useRecipeForm } from '@/components/analyses/use-recipe-form';
 import { useStartAnalysis } from '@/components/data/use-recording';
 import { Button, ButtonLink } from '@/components/ui/button';
+import { Fold } from '@/components/ui/fold';
 import { ErrorState } from '@/components/ui/page-states';
 import { Section } from '@/components/ui/sheet';
 
@@ -63,8 +64,7 @@ export function StartAnalysis({ recordingId, missing }: StartAnalysisProps) {
           submit();
         }}
       >
-        <details open={open} onToggle={(event) => setOpen(event.currentTarget.open)}>
-          <summary className="inline-flex min-h-6 items-center text-note">Recipe</summary>
+        <Fold title="Recipe" open={open} onOpen={setOpen}>
           <div className="pt-2">
             <RecipeFields
               texts={form.texts}
@@ -73,7 +73,7 @@ export function StartAnalysis({ recordingId, missing }: StartAnalysisProps) {
               columns="grid-cols-2 desk:grid-cols-4"
             />
           </div>
-        </details>
+        </Fold>
         {problem ? (
           <div className="pb-2">
             <ErrorState live what="The analysis did not start.">

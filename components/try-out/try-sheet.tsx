@@ -1,7 +1,7 @@
 'use client';
 
 import { useRouter } from 'next/navigation';
-import { useCallback, useEffect, useMemo, useState } from 'react';
+import { useEffect, useMemo, useState } from 'react';
 import { RecipeFields } from '@/components/analyses/recipe-fields';
 import { RECIPE_GROUPS } from '@/components/analyses/recipe-words';
 import { useRecipeForm } from '@/components/analyses/use-recipe-form';
@@ -46,7 +46,7 @@ export function TrySheet({ recording, startReason }: TrySheetProps) {
   const [choice, setChoice] = useState<TryChoice>('row');
   const [from, setFrom] = useState(middle);
   const frames = useMemo(() => tryFrames(choice, from, recording.frames), [choice, from, recording.frames]);
-  const store = useViewerStore(recording.frames, { ...recording, frame: frames[0] });
+  const store = useViewerStore(recording.frames, { ...recording, frame: frames[frames.length - 1] });
   const frame = useViewer(store, (state) => state.frame);
   const form = useRecipeForm();
   const recipe = useSettled(form.recipe, REST_MS);
@@ -55,7 +55,7 @@ export function TrySheet({ recording, startReason }: TrySheetProps) {
   const block = useMemo(() => (answer ? toTrackBlock(answer.tracks) : null), [answer]);
 
   useEffect(() => {
-    if (!frames.includes(store.get().frame)) store.goTo(frames[0]);
+    if (!frames.includes(store.get().frame)) store.goTo(frames[frames.length - 1]);
   }, [frames, store]);
 
   const drawOverlay = ({ ctx, state, view, well, colours }: OverlayScene) => {
@@ -67,28 +67,12 @@ export function TrySheet({ recording, startReason }: TrySheetProps) {
     }
     drawSpots(ctx, found.spots, view, well, answer.imageFacts.spotSigmaPx);
   };
-  const step = useCallback(
-    (by: number) => {
-      const at = frames.findIndex((one) => one >= store.get().frame);
-      store.goTo(frames[Math.max(0, Math.min(frames.length - 1, (at < 0 ? frames.length - 1 : at) + by))]);
-    },
-    [frames, store],
-  );
-
   return (
     <div className="grid grid-cols-[minmax(0,1fr)] gap-x-9 gap-y-6 desk:grid-cols-[minmax(0,1fr)_300px]">
       <div className="min-w-0">
-        <ViewerPanel
-          store={store}
-          recording={recording}
-          drawOverlay={drawOverlay}
-          overlayVersion={answer}
-          events={frames.map((one) => ({ frame: one, kind: 'candidate' }))}
-        >
+        <ViewerPanel store={store} recording={recording} drawOverlay={drawOverlay} overlayVersion={answer}>
           <div className="flex flex-wrap items-center gap-2 pt-1">
             <Segment label="Frames to try" options={CHOICES} value={choice} onChange={setChoice} />
-            <Button onClick={() => step(-1)}>Tried frame before</Button>
-            <Button onClick={() => step(1)}>Tried frame after</Button>
             {choice === 'row' && !frames.includes(frame) ? (
               <Button onClick={() => setFrom(frame)}>Try from this frame on</Button>
             ) : null}
