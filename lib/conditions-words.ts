@@ -1,4 +1,3 @@
-import { quantityText } from './format/quantity';
 import { DISPLAY_UNITS } from './format/unit';
 
 interface ShownConditions {
@@ -11,8 +10,9 @@ interface ShownConditions {
 /** Conditions in one line: `1.85 K, 100 mW/cm², 200 Hz, 6.5 µm/px`; what is not known is left out. */
 export function conditionsWords(conditions: ShownConditions): string {
   const words: string[] = [];
-  const add = (value: number | null | undefined, unit: string, siPerUnit: number, digits = 4) => {
-    if (typeof value === 'number') words.push(quantityText({ value, siPerUnit, unit, digits }));
+  const add = (value: number | null | undefined, unit: string, siPerUnit: number) => {
+    // Entered values: four digits say all that was typed, zeros at the end nothing.
+    if (typeof value === 'number') words.push(`${Number((value / siPerUnit).toPrecision(4))} ${unit}`);
   };
   add(conditions.temperature_K, 'K', 1);
   add(conditions.heatFlux_W_m2, 'mW/cm²', DISPLAY_UNITS.heatFlux.siPerUnit);
