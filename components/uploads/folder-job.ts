@@ -1,7 +1,7 @@
-import { api } from '@/components/data/api-client';
+import { api, ApiError } from '@/components/data/api-client';
 import type { FolderEntry } from '@/lib/uploads/folder-files';
 import type { UploadMemory } from '@/lib/uploads/upload-memory';
-import type { UploadView } from '@/lib/views/recording-view';
+import type { RecordingView, UploadView } from '@/lib/views/recording-view';
 import { SendError, sendFile } from './send-file';
 import type { UploadItem } from './upload-item';
 import { UploadJob, type Tell } from './upload-job';
@@ -45,13 +45,15 @@ export class FolderJob extends UploadJob {
     const { name, bytes } = this.item;
     const key = folderKey(runId, name, frames.length, bytes);
     try {
-      const folder = earlier
-        ? { id: earlier.folderId, recordingId: earlier.recordingId }
-        : await api<{ id: string; recordingId: string }>(`/api/v1/runs/${runId}/folders`, {
-            method: 'POST',
-            body: { name, files: frames.length, bytes },
-            idempotencyKey: crypto.randomUUID(),
-          });
+      const body = { name, files: frames.length, bytes };
+      const folder =
+        earlier && (await stillArriving(earlier.recordingId))
+          ? { id: earlier.folderId, recordingId: earlier.recordingId }
+          : await api<{ id: string; recordingId: string }>(`/api/v1/runs/${runId}/folders`, {
+              method: 'POST',
+              body,
+              idempotencyKey: crypto.randomUUID(),
+            });
       memory.set(key, JSON.stringify(folder));
       this.say({ recordingId: folder.recordingId, state: 'sending' });
       const lanes = Array.from({ length: PARALLEL_FILES }, () => this.lane(folder.id));
@@ -120,5 +122,16 @@ export class FolderJob extends UploadJob {
     let under = 0;
     for (const bytes of this.partial.values()) under += bytes;
     this.sayBytes(this.safeBytes + under);
+  }
+}
+
+/** Whether a folder that this browser remembers can still take files. */
+async function stillArriving(recordingId: string): Promise<boolean> {
+  try {
+    const { state } = await api<RecordingView>(`/api/v1/recordings/${recordingId}`);
+    return state === 'arriving';
+  } catch (error) {
+    if (error instanceof ApiError && error.status === 404) return false;
+    throw error;
   }
 }

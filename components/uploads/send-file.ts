@@ -80,6 +80,8 @@ export const endUpload = (id: string) => Upload.terminate(`/api/v1/uploads/${id}
 
 function mayPass(error: DetailedError): boolean {
   const status = error.originalResponse?.getStatus() ?? 0;
+  // A piece at the wrong offset is put right by asking again; a place that is taken stays taken.
+  if (status === 409 && error.originalRequest?.getMethod() === 'POST') return false;
   return status === 0 || status >= 500 || PASSING.has(status);
 }
 

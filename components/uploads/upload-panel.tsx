@@ -38,7 +38,7 @@ export function UploadPanel({ runId }: { runId: string }) {
   }, [client, runId, seen]);
 
   const take = ({ files, folders }: Dropped) => {
-    setProblem(folders.map((entries) => queue.addFolder(entries)).find(Boolean) ?? null);
+    setProblem(folders.map((entries) => queue.addFolder(entries, open)).find(Boolean) ?? null);
     void queue.addFiles(files, open);
   };
   const onDrop = (event: DragEvent) => {

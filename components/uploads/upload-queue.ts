@@ -58,14 +58,15 @@ export class UploadQueue {
   }
 
   /** Sends a folder of frames as one recording. Returns why it can't be, or null. */
-  addFolder(entries: readonly FolderEntry<File>[]): string | null {
+  addFolder(entries: readonly FolderEntry<File>[], arriving: readonly ArrivingRecording[]): string | null {
     const name = folderNameOf(entries.map(({ path }) => path));
     const { frames, leftOut } = framesOfFolder(entries);
     if (frames.length === 0) return `${name} has no frames. Send a folder of PNG or TIFF files.`;
     const bytes = frames.reduce((sum, { file }) => sum + file.size, 0);
     const remembered = this.memory.get(folderKey(this.runId, name, frames.length, bytes));
     const folder = remembered ? (JSON.parse(remembered) as { id: string; recordingId: string }) : null;
-    this.startFolder(name, frames, leftOut, folder && { ...folder, uploads: [] });
+    const uploads = arriving.find((open) => open.recordingId === folder?.recordingId)?.uploads ?? [];
+    this.startFolder(name, frames, leftOut, folder && { ...folder, uploads });
     return null;
   }
 
