@@ -74,11 +74,14 @@ export async function runClaim(
 
 function watchClaim(claim: JobClaim, share: () => number, ending: AbortController, times: ClaimTimes) {
   let lastSign = Date.now();
+  let lastShare = 0;
   let looking: Promise<void> = Promise.resolve();
   const look = async () => {
-    const signDue = Date.now() - lastSign >= times.heartbeatMs;
-    if (signDue) lastSign = Date.now();
-    const held = signDue ? await renewClaim(claim, share()) : await holdsClaim(claim);
+    // People watch the progress, so news of it doesn't wait for the next sign of life.
+    const now = share();
+    const signDue = Date.now() - lastSign >= times.heartbeatMs || now !== lastShare;
+    if (signDue) [lastSign, lastShare] = [Date.now(), now];
+    const held = signDue ? await renewClaim(claim, now) : await holdsClaim(claim);
     if (!held) ending.abort();
   };
   let busy = false;

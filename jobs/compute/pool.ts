@@ -59,6 +59,8 @@ export class ComputePool {
     if (signal?.aborted) throw new ComputeError('STOPPED', 'Stopped.');
     const child = await this.borrow(key, signal);
     try {
+      // Called off while it waited: nobody would tell the child any more.
+      if (signal?.aborted) throw new ComputeError('STOPPED', 'Stopped.');
       child.lastKey = key;
       return await child.run(task, input, { signal, timeoutMs, onProgress });
     } finally {

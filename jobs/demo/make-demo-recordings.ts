@@ -7,7 +7,13 @@ import { getSequelize } from '@/models/database';
 import { enqueueIngest } from '../ingest-recording';
 import { stackFile, stackFolder } from '../stack-folder';
 import { writeDemoFile, type DemoFile } from './demo-accounts';
-import { conditionsForScene, DEMO_CAMPAIGNS, type DemoRecording, type DemoRun } from './demo-plan';
+import {
+  conditionsForScene,
+  DEMO_CAMPAIGNS,
+  type DemoCampaign,
+  type DemoRecording,
+  type DemoRun,
+} from './demo-plan';
 import { makeDemoStack } from './make-demo-stack';
 
 /**
@@ -18,8 +24,9 @@ export async function makeDemoRecordings(
   labId: string,
   file: DemoFile,
   say: (line: string) => void,
+  campaigns: readonly DemoCampaign[] = DEMO_CAMPAIGNS,
 ): Promise<void> {
-  for (const campaign of DEMO_CAMPAIGNS) {
+  for (const campaign of campaigns) {
     for (const run of campaign.runs) {
       for (const recording of run.recordings) {
         const known = file.recordings[recording.key];

@@ -6,7 +6,7 @@ import { startWorker, type WorkerTimes } from '@/jobs/worker';
 import { closeDoorbell } from '@/jobs/doorbell';
 import { closeDatabase } from '@/models/database';
 
-const log = pino({ name: 'worker', level: process.env.LOG_LEVEL || 'info', base: { pid: process.pid } });
+const log = pino({ name: 'worker', level: process.env.BEADLINE_LOG ?? 'info', base: { pid: process.pid } });
 const say: Say = (level, message, { cause, ...facts } = {}) => log[level]({ ...facts, err: cause }, message);
 
 /** Times in ms that can be set from outside, for tests of what happens when a worker dies. */

@@ -201,11 +201,11 @@ test('a worker gives signs of life with its progress, and is not counted once it
 });
 
 test('a database that goes away for a moment does not end the worker', async () => {
+  const other = await makeAnalysis(lab);
   await work(({ commit }) => commit(async () => undefined));
   await db.sequelize.query(
     `SELECT pg_terminate_backend(pid) FROM pg_stat_activity WHERE datname = current_database() AND pid <> pg_backend_pid()`,
   );
-  const other = await makeAnalysis(lab);
   const jobId = await until(() => askForFakeWork(other).catch(() => null));
   await until(
     () => stateOf(jobId!),
