@@ -45,8 +45,9 @@ export function AnalysisSheet({
   downloadReason,
 }: AnalysisSheetProps) {
   const { data: analysis = initial, isError } = useProgress(initial.id, initial);
-  const measures = useMeasures(initial.id, analysis.state);
-  const candidates = useCandidates(initial.id, analysis.state);
+  const done = analysis.state === 'done';
+  const measures = useMeasures(initial.id, done);
+  const candidates = useCandidates(initial.id, done);
   // Opened in the middle, where tracks have a past to show.
   const store = useViewerStore(recording.frames, { ...recording, frame: Math.floor(recording.frames / 2) });
   const chosenTrack = useViewer(store, (state) => state.chosenTrack);
@@ -86,61 +87,62 @@ export function AnalysisSheet({
       </PageTitle>
       {isError ? <StaleLine what="The progress may be out of date.">It is asked for again.</StaleLine> : null}
       <ProgressPanel analysis={analysis} stopReason={stopReason} />
-      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-9 gap-y-6 pt-1 aside:grid-cols-[minmax(0,1fr)_484px]">
+      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-9 gap-y-6 pt-3 aside:grid-cols-[minmax(0,1fr)_484px]">
         <div ref={setWell} className="min-w-0">
           <TrackViewer
             store={store}
             recording={recording}
             analysisId={initial.id}
-            ready={linked}
+            ready={linked ? analysis.stage : null}
             spotsPerFrame={measures.data?.spotsPerFrame ?? []}
             candidates={candidates.data ?? []}
           />
-          <Answer query={measures} what="what was measured">
-            {(data) => (data ? <EstimatesSection estimates={data.estimates} /> : null)}
-          </Answer>
+          {done ? (
+            <Answer query={measures} what="the estimates">
+              {(data) => (data ? <EstimatesSection estimates={data.estimates} /> : null)}
+            </Answer>
+          ) : null}
         </div>
         <div className="min-w-0">
-          <Answer query={measures} what="what was measured">
-            {(data) =>
-              data ? (
-                <>
-                  <PopulationSection populations={data.populations} />
-                  <PdfSection pdfs={data.pdfs} />
-                </>
-              ) : (
-                notYet
-              )
-            }
-          </Answer>
+          {done ? (
+            <Answer query={measures} what="populations and velocities">
+              {(data) =>
+                data ? (
+                  <>
+                    <PopulationSection populations={data.populations} />
+                    <PdfSection pdfs={data.pdfs} />
+                  </>
+                ) : null
+              }
+            </Answer>
+          ) : (
+            notYet
+          )}
           <ProvenanceSection analysis={analysis} sha256={recording.sha256} />
           <DownloadsSection
             analysisId={initial.id}
-            reason={
-              downloadReason ??
-              (analysis.state === 'done' ? null : 'Files can be had once the analysis is done.')
-            }
+            reason={downloadReason ?? (done ? null : 'Files can be had once the analysis is done.')}
           />
         </div>
       </div>
-      <Answer query={candidates} what="the candidates">
-        {(list) =>
-          list && analysis.state === 'done' ? (
+      {done ? (
+        <Answer query={candidates} what="the candidates">
+          {(list) => (
             <CandidatesSection
-              candidates={list}
+              candidates={list ?? []}
               pairs={pairsOf(measures.data?.populations)}
               chosen={chosenEvent}
               onChoose={({ event }) => store.set({ chosenEvent: event })}
               onShow={showCandidate}
             />
-          ) : null
-        }
-      </Answer>
+          )}
+        </Answer>
+      ) : null}
       <div className="grid grid-cols-[minmax(0,1fr)] gap-x-9 gap-y-6 pt-[22px] aside:grid-cols-[minmax(0,1fr)_484px]">
         <TrackTable
           analysisId={initial.id}
           tracks={analysis.summary?.tracks ?? null}
-          ready={linked}
+          ready={linked ? analysis.stage : null}
           chosen={chosenTrack}
           onShow={showTrack}
         />

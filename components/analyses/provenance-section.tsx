@@ -36,7 +36,7 @@ export function ProvenanceSection({ analysis, sha256 }: ProvenanceProps) {
           },
           { name: 'Code', value: analysis.codeVersion },
           {
-            name: 'Started',
+            name: startedAt ? 'Started' : 'Asked for',
             value: (
               <>
                 <Moment at={startedAt ?? analysis.createdAt} />

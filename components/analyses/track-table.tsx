@@ -22,7 +22,8 @@ const FIRST_PAGE = [''];
 interface TrackTableProps {
   analysisId: string;
   tracks: number | null;
-  ready: boolean;
+  /** Null while the tracks are not linked. */
+  ready: string | null;
   chosen: number | null;
   onShow: (row: TrackRowView) => void;
 }
@@ -51,68 +52,71 @@ export function TrackTable({ analysisId, tracks, ready, chosen, onShow }: TrackT
         />
       }
     >
-      <Answer query={query} what="the tracks">
-        {(page) =>
-          page === null ? (
-            <EmptyState>The tracks are not linked yet.</EmptyState>
-          ) : page.items.length === 0 ? (
-            <EmptyState>
-              {state.population === 'all' ? 'No tracks were found.' : `No ${state.population} tracks.`}
-            </EmptyState>
-          ) : (
-            <>
-              <Table label="Tracks" density="dense" aria-busy={query.isPlaceholderData || undefined}>
-                <thead>
-                  <tr>
-                    <SortHead field="track" {...head}>
-                      Track
-                    </SortHead>
-                    <SortHead field="firstFrame" numeric {...head}>
-                      First frame
-                    </SortHead>
-                    <SortHead field="points" numeric {...head}>
-                      Frames
-                    </SortHead>
-                    <HeadCell numeric narrow="hide">
-                      Bridged
-                    </HeadCell>
-                    <HeadCell>Population</HeadCell>
-                    <SortHead field="pTrapped" numeric narrow="hide" {...head}>
-                      p trapped
-                    </SortHead>
-                    <SortHead field="meanSpeed_m_s" numeric narrow="hide" unit="mm/s" {...head}>
-                      Mean speed
-                    </SortHead>
-                    <SortHead field="brightness" numeric narrow="hide" unit="e" {...head}>
-                      Brightness
-                    </SortHead>
-                    <HeadCell silent>In the frames</HeadCell>
-                  </tr>
-                </thead>
-                <tbody>
-                  {page.items.map((row) => (
-                    <TrackRow key={row.track} row={row} chosen={row.track === chosen} onShow={onShow} />
-                  ))}
-                </tbody>
-              </Table>
-              <nav aria-label="Pages of tracks" className="flex gap-2 pt-3 print:hidden">
-                {state.pages.length > 1 ? (
-                  <Button onClick={() => setState({ ...state, pages: state.pages.slice(0, -1) })}>
-                    Back
-                  </Button>
-                ) : null}
-                {page.nextCursor ? (
-                  <Button
-                    onClick={() => setState({ ...state, pages: [...state.pages, page.nextCursor ?? ''] })}
-                  >
-                    Next
-                  </Button>
-                ) : null}
-              </nav>
-            </>
-          )
-        }
-      </Answer>
+      {ready === null ? <EmptyState>The tracks are not linked yet.</EmptyState> : null}
+      {ready === null ? null : (
+        <Answer query={query} what="the tracks">
+          {(page) =>
+            page === null ? (
+              <EmptyState>The tracks are not linked yet.</EmptyState>
+            ) : page.items.length === 0 ? (
+              <EmptyState>
+                {state.population === 'all' ? 'No tracks were found.' : `No ${state.population} tracks.`}
+              </EmptyState>
+            ) : (
+              <>
+                <Table label="Tracks" density="dense" aria-busy={query.isPlaceholderData || undefined}>
+                  <thead>
+                    <tr>
+                      <SortHead field="track" {...head}>
+                        Track
+                      </SortHead>
+                      <SortHead field="firstFrame" numeric {...head}>
+                        First frame
+                      </SortHead>
+                      <SortHead field="points" numeric {...head}>
+                        Frames
+                      </SortHead>
+                      <HeadCell numeric narrow="hide">
+                        Bridged
+                      </HeadCell>
+                      <HeadCell>Population</HeadCell>
+                      <SortHead field="pTrapped" numeric narrow="hide" {...head}>
+                        p trapped
+                      </SortHead>
+                      <SortHead field="meanSpeed_m_s" numeric narrow="hide" unit="mm/s" {...head}>
+                        Mean speed
+                      </SortHead>
+                      <SortHead field="brightness" numeric narrow="hide" unit="e" {...head}>
+                        Brightness
+                      </SortHead>
+                      <HeadCell silent>In the frames</HeadCell>
+                    </tr>
+                  </thead>
+                  <tbody>
+                    {page.items.map((row) => (
+                      <TrackRow key={row.track} row={row} chosen={row.track === chosen} onShow={onShow} />
+                    ))}
+                  </tbody>
+                </Table>
+                <nav aria-label="Pages of tracks" className="flex gap-2 pt-3 print:hidden">
+                  {state.pages.length > 1 ? (
+                    <Button onClick={() => setState({ ...state, pages: state.pages.slice(0, -1) })}>
+                      Back
+                    </Button>
+                  ) : null}
+                  {page.nextCursor ? (
+                    <Button
+                      onClick={() => setState({ ...state, pages: [...state.pages, page.nextCursor ?? ''] })}
+                    >
+                      Next
+                    </Button>
+                  ) : null}
+                </nav>
+              </>
+            )
+          }
+        </Answer>
+      )}
     </Section>
   );
 }

@@ -19,8 +19,8 @@ interface TrackViewerProps {
   store: ViewerStore;
   recording: ViewedRecording;
   analysisId: string;
-  /** False while the tracks are not linked yet. */
-  ready: boolean;
+  /** Null while the tracks are not linked yet; another word when there is more to know of them. */
+  ready: string | null;
   spotsPerFrame: readonly number[];
   candidates: readonly CandidateView[];
 }

@@ -9,10 +9,11 @@ import { orNull } from './use-measures';
 
 const PAGE = 200;
 
-/** All candidates of an analysis in the order of their meeting; null while they have not been looked for. */
-export function useCandidates(analysisId: string, state: string) {
+/** All candidates of an analysis in the order of their meeting; not asked for before the analysis is done. */
+export function useCandidates(analysisId: string, done: boolean) {
   return useQuery({
-    queryKey: ['analysis', analysisId, 'candidates', state === 'done'],
+    queryKey: ['analysis', analysisId, 'candidates'],
+    enabled: done,
     queryFn: ({ signal }) => orNull(readAll(analysisId, signal)),
     staleTime: Infinity,
   });

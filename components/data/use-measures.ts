@@ -5,13 +5,11 @@ import type { MeasuresView } from '@/lib/views/analysis-view';
 import { api, ApiError } from './api-client';
 import { analysisPath } from './use-analysis';
 
-/**
- * What was measured of an analysis; null while its stage has not run. Asked for anew when the
- * analysis comes to an end.
- */
-export function useMeasures(analysisId: string, state: string) {
+/** What was measured of an analysis; not asked for before the analysis is done. */
+export function useMeasures(analysisId: string, done: boolean) {
   return useQuery({
-    queryKey: ['analysis', analysisId, 'measures', state === 'done'],
+    queryKey: ['analysis', analysisId, 'measures'],
+    enabled: done,
     queryFn: ({ signal }) => orNull(api<MeasuresView>(`${analysisPath(analysisId)}/measures`, { signal })),
     staleTime: Infinity,
   });

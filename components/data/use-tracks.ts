@@ -19,13 +19,14 @@ export interface TrackTableState {
 const ROWS = 20;
 
 /** A page of the table of tracks; null while the tracks are not linked. */
-export function useTracks(analysisId: string, table: TrackTableState, ready: boolean) {
+export function useTracks(analysisId: string, table: TrackTableState, ready: string | null) {
   const query = new URLSearchParams({ limit: String(ROWS), sort: table.sort });
   if (table.population !== 'all') query.set('population', table.population);
   const cursor = table.pages.at(-1);
   if (cursor) query.set('cursor', cursor);
   return useQuery({
     queryKey: ['analysis', analysisId, 'tracks', query.toString(), ready],
+    enabled: ready !== null,
     queryFn: ({ signal }) =>
       orNull(api<ListView<TrackRowView>>(`${analysisPath(analysisId)}/track-list?${query}`, { signal })),
     placeholderData: keepPreviousData,
