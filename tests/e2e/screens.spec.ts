@@ -70,6 +70,16 @@ afterAll(async () => {
 
 const addressOf = (page: string) => page.replace(/[A-Z]{3,}/, (name) => ids[name] ?? name);
 
+/** Rules don't depend on the window: axe looks once a theme, at the wide one. */
+async function expectNoSeriousViolation(page: Page, where: string) {
+  const { violations } = await new AxeBuilder({ page }).analyze();
+  const serious = violations.filter(({ impact }) => impact === 'serious' || impact === 'critical');
+  const words = serious.map(
+    ({ id, nodes }) => `${id}: ${nodes.map(({ target }) => target.join(' ')).join(' | ')}`,
+  );
+  expect(words, where).toEqual([]);
+}
+
 async function look(
   lab: TestLab,
   role: Role,
