@@ -71,6 +71,7 @@ export class FileJob extends UploadJob {
         uploadUrl,
         metadata: { filename: file.name, run: runId, ...(sha256 ? { sha256 } : {}) },
         onBytes: (bytes) => this.sayBytes(bytes),
+        onRetry: () => this.sayRetry(),
         onUploadUrl: (url) => (uploadUrl = url),
         onRecording: (recordingId) => {
           if (recordingId === this.item.recordingId) return;

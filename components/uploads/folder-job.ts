@@ -95,6 +95,7 @@ export class FolderJob extends UploadJob {
           position: String(position),
         },
         onBytes: (sent) => this.count(position, sent),
+        onRetry: () => this.sayRetry(),
         onRecording: () => undefined,
         onUploadUrl: (url) => (uploadUrl = url),
       });

@@ -14,6 +14,8 @@ export interface SendRequest {
   uploadUrl?: string;
   onBytes: (bytes: number) => void;
   onRecording: (recordingId: string) => void;
+  /** A piece did not get through and is sent again. */
+  onRetry: () => void;
   onUploadUrl?: (url: string) => void;
 }
 
@@ -54,7 +56,11 @@ export function sendFile(request: SendRequest): Sending {
     // Fingerprints by name and date confuse files; this page keeps its own, of the content.
     storeFingerprintForResuming: false,
     removeFingerprintOnSuccess: true,
-    onShouldRetry: (error) => mayPass(error),
+    onShouldRetry: (error) => {
+      const again = mayPass(error);
+      if (again) request.onRetry();
+      return again;
+    },
     onProgress: (sent) => request.onBytes(sent),
     onUploadUrlAvailable: () => {
       if (upload.url) request.onUploadUrl?.(upload.url);

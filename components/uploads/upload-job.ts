@@ -3,6 +3,8 @@ import { SpeedMeter } from '@/lib/uploads/speed';
 import type { Sending } from './send-file';
 import type { UploadItem } from './upload-item';
 
+const TRYING_AGAIN = 'Nothing gets through at the moment; it is tried again.';
+
 /** What a job tells its queue. */
 export type Tell = (change: Partial<UploadItem>) => void;
 
@@ -27,7 +29,7 @@ export abstract class UploadJob {
     this.held = true;
     this.meter.reset();
     for (const sending of this.sendings) sending.pause();
-    this.say({ state: 'paused', bytesPerS: null, secondsLeft: null });
+    this.say({ state: 'paused', message: null, bytesPerS: null, secondsLeft: null });
   }
 
   resume(): void {
@@ -69,7 +71,14 @@ export abstract class UploadJob {
       sentBytes,
       bytesPerS: this.meter.bytesPerS(nowMs),
       secondsLeft: this.meter.secondsLeft(this.item.bytes, nowMs),
+      ...(this.item.message === TRYING_AGAIN ? { message: null } : {}),
     });
+  }
+
+  /** Nothing gets through at the moment: a speed would be a claim. */
+  protected sayRetry(): void {
+    this.meter.reset();
+    if (!this.held) this.say({ bytesPerS: null, secondsLeft: null, message: TRYING_AGAIN });
   }
 
   /** The link is lost: nothing more is sent until the person, or the returning link, says so. */
