@@ -67,7 +67,9 @@ function intervals({ value, low, high, inputs, quantity }: Estimate) {
 
 function countedFrom({ method, inputs }: Estimate): string | undefined {
   if (method === 'combined') {
-    const methods = Object.keys(inputs).filter((name) => name in METHOD_NAMES).length;
+    const usable = ([name, { value }]: [string, { value: unknown }]) =>
+      name in METHOD_NAMES && value !== null;
+    const methods = Object.entries(inputs).filter(usable).length;
     return methods > 0 ? `${methods} ${methods === 1 ? 'method' : 'methods'}` : undefined;
   }
   for (const [name, words] of COUNTED) {

@@ -24,7 +24,7 @@ export function pdfsAt(pdfs: readonly Pdf[], component: PdfComponentName, lagFra
     (pdf) => pdf.component === component && pdf.lagFrames === lagFrames && pdf.samples > 0,
   );
   const told = here.filter(({ population }) => population === 'trapped' || population === 'free');
-  return told.length > 0 ? here.filter(({ population }) => population !== 'all') : here;
+  return here.filter(({ population }) => (population === 'all') === (told.length === 0));
 }
 
 export function pdfSeries(pdf: Pdf): PdfSeries {
