@@ -1,12 +1,12 @@
 import { setPriority } from 'node:os';
 import type { FromChild, TaskInput, TaskName, TaskOutput, ToChild } from './tasks';
-import { detectChunk } from './work/detect-chunk';
-import { inspectStack } from './work/inspect-stack';
-import { linkTracks } from './work/link-tracks';
-import { measureFlow } from './work/measure-flow';
-import { measureImage } from './work/measure-image';
-import { tryRecipe } from './work/try-recipe';
-import type { WorkContext } from './work/work-context';
+import { detectChunk } from './steps/detect-chunk';
+import { inspectStack } from './steps/inspect-stack';
+import { linkTracks } from './steps/link-tracks';
+import { measureFlow } from './steps/measure-flow';
+import { measureImage } from './steps/measure-image';
+import { tryRecipe } from './steps/try-recipe';
+import type { WorkContext } from './steps/work-context';
 
 type Work = { [K in TaskName]: (input: TaskInput<K>, context: WorkContext) => Promise<TaskOutput<K>> };
 
