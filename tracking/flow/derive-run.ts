@@ -82,13 +82,13 @@ function spacingEntry(run: RunConditions, helium: HeliumProperties | null, vns: 
   const own = run.gamma_s_m2 ?? null;
   const gamma = own ?? gammaAt(helium.temperatureK);
   if (Number.isNaN(gamma)) {
-    return unknown('m', 'No gamma is on file at this temperature (1.30 to 1.90 K). Enter your own.');
+    return unknown('m', 'No γ is on file at this temperature (1.30 to 1.90 K). Enter your own.');
   }
   const density = steadyLineDensity(gamma, vns.value, run.v0_m_s ?? 0);
   if (density === 0) return unknown('m', 'Below the critical velocity no tangle is expected.');
   const reason = own
-    ? 'L = gamma^2 (v_ns - v_0)^2 with the gamma entered.'
-    : 'L = gamma^2 (v_ns - v_0)^2 with a published gamma, unverified.';
+    ? 'From √L = γ (v_ns − v₀) with the γ entered.'
+    : 'From √L = γ (v_ns − v₀) with a published γ, unverified.';
   return {
     value: 1 / Math.sqrt(density),
     unit: 'm',

@@ -60,7 +60,7 @@ export function planWarnings(run: RunConditions, entries: Record<DerivedName, De
     warn(
       'GAMMA_UNVERIFIED',
       'gamma_s_m2',
-      'The expected spacing rests on a published gamma that is unverified and scatters by 30 % between channels. Enter your own where you know it.',
+      'The expected spacing rests on a published γ that is unverified and scatters by 30 % between channels. Enter your own where you know it.',
     );
   }
   const settlingMS = entries.settling_m_s.value;
