@@ -135,8 +135,9 @@ export function decodeSpots(bytes: Uint8Array): Spots {
   if (bytes.length < HEADER_BYTES) {
     throw new RangeError(`Got ${bytes.length} bytes when spots have a header of ${HEADER_BYTES}.`);
   }
-  // A copy starts at an address that 32-bit views may start at; the bytes received may not.
-  const aligned = bytes.slice().buffer;
+  // A copy starts at an address that 32-bit views may start at; the bytes received may not. `slice` is
+  // not enough: that of Node's Buffer gives a view of the same memory.
+  const aligned = new Uint8Array(bytes).buffer;
   const [magic, version, count] = new Uint32Array(aligned, 0, 4);
   if (magic !== MAGIC) throw new RangeError(`These bytes are not spots (they begin with ${magic}).`);
   if (version !== VERSION) throw new RangeError(`Got spots v${version} when expected v${VERSION}.`);

@@ -28,6 +28,20 @@ test('spots come back from their bytes unchanged, from any address', () => {
   expect(decodeSpots(encodeSpots(someSpots([]))).count).toBe(0);
 });
 
+test('spots come back from a Buffer that lies at any address of a pool, and are a copy of it', () => {
+  const spots = someSpots([0, 2, 2, 7]);
+  const bytes = encodeSpots(spots);
+  for (let shift = 0; shift < 8; shift++) {
+    const pool = Buffer.alloc(bytes.length + 16, 0xff);
+    const buffer = pool.subarray(shift, shift + bytes.length);
+    buffer.set(bytes);
+    const decoded = decodeSpots(buffer);
+    expect(decoded).toEqual(spots);
+    pool.fill(0);
+    expect(decoded.xPx[3], 'the pool is written anew').toBe(spots.xPx[3]);
+  }
+});
+
 test('bytes that are cut short, of another version or not spots are refused', () => {
   const bytes = encodeSpots(someSpots([1, 2]));
   expect(() => decodeSpots(bytes.subarray(0, bytes.length - 1))).toThrow(/bytes/);
