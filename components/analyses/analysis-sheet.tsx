@@ -4,7 +4,9 @@ import { useState } from 'react';
 import { SpotsPlot } from '@/components/charts/spots-plot';
 import { TrackViewer } from '@/components/canvas/track-viewer';
 import { useViewer, useViewerStore } from '@/components/canvas/use-viewer';
+import { centreOn, type Point } from '@/components/canvas/view-box';
 import type { ViewedRecording } from '@/components/canvas/viewer-panel';
+import type { ViewerState } from '@/components/canvas/viewer-store';
 import { Answer } from '@/components/data/answer';
 import { useCandidates } from '@/components/data/use-candidates';
 import { useMeasures } from '@/components/data/use-measures';
@@ -55,19 +57,24 @@ export function AnalysisSheet({
   const [well, setWell] = useState<HTMLDivElement | null>(null);
   const linked = LINKED.includes(analysis.stage);
 
-  const show = (frame: number, chosen: { chosenTrack: number | null; chosenEvent: number | null }) => {
+  const show = (frame: number, place: Point, chosen: Pick<ViewerState, 'chosenTrack' | 'chosenEvent'>) => {
     store.goTo(frame);
     store.set(chosen);
-    well?.scrollIntoView({ block: 'nearest' });
-    well?.querySelector<HTMLElement>('[role=application]')?.focus({ preventScroll: true });
+    const frames = well?.querySelector<HTMLElement>('[role=application]');
+    const { view, zoomed } = store.get();
+    if (frames && view && zoomed) {
+      const size = { width: frames.clientWidth, height: frames.clientHeight };
+      store.set({ view: centreOn(view, place, recording, size) });
+    }
+    well?.scrollIntoView({ block: 'start' });
+    frames?.focus({ preventScroll: true });
   };
-  const showTrack = (row: TrackRowView) =>
-    show(Math.round((row.firstFrame + row.lastFrame) / 2), { chosenTrack: row.track, chosenEvent: null });
-  const showCandidate = ({ t0_s, trackA, event }: CandidateView) =>
-    show(recording.frameIntervalS ? t0_s / recording.frameIntervalS : 0, {
-      chosenTrack: trackA,
-      chosenEvent: event,
-    });
+  const showTrack = ({ firstFrame, lastFrame, x_px: x, y_px: y, track }: TrackRowView) =>
+    show((firstFrame + lastFrame) / 2, { x, y }, { chosenTrack: track, chosenEvent: null });
+  const showCandidate = ({ t0_s, x_px: x, y_px: y, trackA, event }: CandidateView) => {
+    const frame = recording.frameIntervalS ? t0_s / recording.frameIntervalS : 0;
+    show(frame, { x, y }, { chosenTrack: trackA, chosenEvent: event });
+  };
 
   const notYet = (
     <EmptyState>
@@ -88,7 +95,7 @@ export function AnalysisSheet({
       {isError ? <StaleLine what="The progress may be out of date.">It is asked for again.</StaleLine> : null}
       <ProgressPanel analysis={analysis} stopReason={stopReason} />
       <div className="grid grid-cols-[minmax(0,1fr)] gap-x-9 gap-y-6 pt-3 aside:grid-cols-[minmax(0,1fr)_484px]">
-        <div ref={setWell} className="min-w-0">
+        <div ref={setWell} className="min-w-0 scroll-mt-3">
           <TrackViewer
             store={store}
             recording={recording}
