@@ -16,14 +16,17 @@ function factorInterval(entry: DerivedEntry) {
 interface DerivedPanelProps {
   derived: DerivedRun;
   pixelSizeM: number | null;
+  /** False where the margin isn't beside the panel, so that no thread can lead there. */
+  tied?: boolean;
 }
 
 /** What follows from the conditions, changing with every key. */
-export function DerivedPanel({ derived, pixelSizeM }: DerivedPanelProps) {
+export function DerivedPanel({ derived, pixelSizeM, tied = true }: DerivedPanelProps) {
   const { entries, warnings } = derived;
   const reason = entries.rhoSRatio.value === null ? entries.rhoSRatio.reason : null;
   const flowReason = reason === null && entries.vn_m_s.value === null ? entries.vn_m_s.reason : null;
-  const tieOf = (...fields: string[]) => warnings.find(({ field }) => field && fields.includes(field))?.code;
+  const tieOf = (...fields: string[]) =>
+    tied ? warnings.find(({ field }) => field && fields.includes(field))?.code : undefined;
   const stepPx = entries.stepPerFrame_px;
   const stepM = stepPx.value !== null && pixelSizeM ? stepPx.value * pixelSizeM : null;
   const velocity = DISPLAY_UNITS.velocity;

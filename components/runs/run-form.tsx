@@ -17,6 +17,7 @@ import { suspiciousConditions } from '@/lib/suspicious-conditions';
 import { splitTags } from '@/lib/tags';
 import { deriveRun } from '@/tracking/flow/derive-run';
 import { ConditionsFields } from './conditions-fields';
+import { DerivedFold } from './derived-fold';
 import { DerivedPanel } from './derived-panel';
 import { RunNotes } from './run-notes';
 
@@ -183,9 +184,10 @@ export function RunForm(props: RunFormProps) {
             </div>
           )}
         </form>
-        <div className="max-desk:order-first">
+        <div className="max-desk:hidden">
           <DerivedPanel derived={derived} pixelSizeM={conditions.pixelSize_m ?? null} />
         </div>
+        <DerivedFold derived={derived} pixelSizeM={conditions.pixelSize_m ?? null} />
       </div>
     </Sheet>
   );
