@@ -8,6 +8,7 @@ import { ROOT } from './platform/paths.mjs';
 import { PlainStop, runToExit } from './platform/plain-stop.mjs';
 import { startPrivateCluster } from './platform/private-cluster.mjs';
 import { endCommands } from './platform/run-command.mjs';
+import { refuseHalfRestored } from './platform/restore-backup.mjs';
 import { readRunning, removeRunning, writeRunning } from './platform/running.mjs';
 import { sayOn } from './platform/say.mjs';
 import { ensureDataFolder, ensureSecrets } from './platform/secrets.mjs';
@@ -27,6 +28,7 @@ const say = sayOn(process.stdout);
 async function start() {
   const settings = readStartSettings(process.env);
   const { url, port, data } = settings;
+  refuseHalfRestored(data);
   ensureDataFolder(data);
   const other = readRunning(data);
   if (other) throw new PlainStop(`Beadline already runs on ${data} (process ${other.pid}, ${other.url}).`);
