@@ -1,4 +1,7 @@
-// `npm run bench`: throughputs and ratios on this machine.
+// `npm run bench`: throughputs and accuracy on this machine, beside those of a script on SciPy.
+import { ensureReferencePython } from './bench/reference-python.mjs';
 import { runEntry } from './platform/run-entry.mjs';
+import { sayOn } from './platform/say.mjs';
 
+process.env.BEADLINE_BENCH_PYTHON = (await ensureReferencePython(sayOn(process.stderr))) ?? '';
 await runEntry('bench', { database: 'none' });

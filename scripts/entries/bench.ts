@@ -1,84 +1,75 @@
 import { mkdir, mkdtemp, rm } from 'node:fs/promises';
-import { cpus, tmpdir } from 'node:os';
+import { cpus, loadavg, tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { ComputePool } from '@/jobs/compute/pool';
-import { writeTiff } from '@/jobs/demo/write-tiff';
-import { analyseStack, type LocalAnalysis } from '@/jobs/local/analyse-stack';
 import { localStack } from '@/jobs/local/local-stack';
 import { codeVersion } from '@/lib/env';
-import { createRenderer } from '@/tracking/simulate/render';
-import { standardCamera, standardScene } from '@/tracking/simulate/standard-scene';
+import { runCore } from '@/scripts/bench/core-run';
+import { medianRun, type PipelineRun } from '@/scripts/bench/pipeline-run';
+import { makeRecording } from '@/scripts/bench/recording';
+import { runReference } from '@/scripts/bench/reference-run';
+import { accuracyTable, speedTable, workersTable } from '@/scripts/bench/report';
+import { runWorkers } from '@/scripts/bench/workers-run';
+import { openStack } from '@/stacks/open-stack';
 
-// Throughputs of the whole road on a simulated recording: 512 x 512 px, about 300 tracers, SNR 4.
+// Speed and accuracy on a simulated recording, beside those of a script on SciPy in the same run.
 // Clocks on a busy machine lie; ratios within one run are what to compare.
 
-const FRAMES = 96;
-const SEED = 1;
-const CONDITIONS = { pixelSize_m: 1e-5, frameInterval_s: 5e-3, sheetThickness_m: 1e-4 };
-const MEGA = 1e6;
-
-async function makeStack(path: string): Promise<void> {
-  const scene = standardScene({ snr: 4, seed: SEED, frames: FRAMES });
-  const renderer = createRenderer(scene, standardCamera(SEED));
-  const { widthPx: width, heightPx: height, frames } = scene;
-  await writeTiff(path, { width, height, frames, frame: (index) => renderer.renderFrame(index) });
-}
-
-function figures(round: string, children: number, analysis: LocalAnalysis) {
-  const { stack, timingsS, spots, tracks, readingShare } = analysis;
-  const megapixels = (stack.frames * stack.width * stack.height) / MEGA;
-  const links = tracks.frame.length - tracks.count;
-  const per = (amount: number, seconds: number) => Number((amount / seconds).toPrecision(3));
-  const wholeS = Object.values(timingsS).reduce((sum, seconds) => sum + seconds, 0);
-  return {
-    round,
-    children,
-    check_Mpx_s: per(megapixels, timingsS.check),
-    measureImage_s: Number(timingsS['measure-image'].toFixed(2)),
-    detect_Mpx_s: per(megapixels, timingsS['detect-spots']),
-    detect_spots_s: per(spots, timingsS['detect-spots']),
-    shareOfReading: Number(readingShare.toFixed(3)),
-    link_links_s: per(links, timingsS['link-tracks']),
-    measureFlow_points_s: per(tracks.frame.length, timingsS['measure-flow']),
-    whole_Mpx_s: per(megapixels, wholeS),
-  };
-}
+const RECORDING = { snr: 4, seed: 1, frames: 64 };
+const ROUNDS = 3;
 
 const folder = await mkdtemp(join(tmpdir(), 'beadline-bench-'));
 const childPath = fileURLToPath(new URL('./compute-child.mjs', import.meta.url));
-const say = (line: Record<string, unknown>) => process.stdout.write(`${JSON.stringify(line)}\n`);
+const python = process.env.BEADLINE_BENCH_PYTHON || null;
+const say = (text: string) => process.stdout.write(`${text}\n`);
+const note = (text: string) => process.stderr.write(`${text}\n`);
+
 try {
-  const path = join(folder, 'standard.tif');
-  process.stderr.write('Simulating the recording\n');
-  await makeStack(path);
-  const source = await localStack(path);
-  say({
-    codeVersion: codeVersion(),
-    cpus: cpus().length,
-    cpu: cpus()[0]?.model,
-    frames: FRAMES,
-    size: '512 x 512',
-  });
-  const detect: Record<string, number> = {};
-  for (const children of [1, 2]) {
-    const pool = new ComputePool(children, { childPath });
-    // The first round also warms the children's compilers; both are told.
-    for (const round of ['cold', 'warm']) {
-      const workDir = join(folder, `${children}-${round}`);
-      await mkdir(workDir);
-      const analysis = await analyseStack({ source, workDir, conditions: CONDITIONS, recipe: {} }, pool);
-      const line = figures(round, children, analysis);
-      detect[`${children}-${round}`] = line.detect_Mpx_s;
-      say(line);
-    }
-    await pool.close();
+  note('Simulating the recording');
+  const recording = await makeRecording(folder, RECORDING);
+  const { width, height, frames, tiffPath } = recording;
+  const load = loadavg()[0].toFixed(1);
+  say(
+    `Beadline ${codeVersion()}, Node ${process.version}, ${cpus().length} x ${cpus()[0]?.model}, load ${load}`,
+  );
+  say(
+    `Standard recording: ${frames} frames of ${width} x ${height} px, SNR ${RECORDING.snr}, seed ${RECORDING.seed}`,
+  );
+
+  // The product indexes a stack once; both pipelines then read frames that are in the page cache.
+  const stackDir = join(folder, 'indexed');
+  await mkdir(stackDir);
+  const pool = new ComputePool(1, { childPath });
+  const source = await localStack(tiffPath);
+  await pool.run('inspectStack', { source, outDir: stackDir, expectedSha256: [], previews: false });
+  await pool.close();
+
+  const full: PipelineRun[] = [];
+  const quick: PipelineRun[] = [];
+  const script: PipelineRun[] = [];
+  const stack = await openStack(stackDir);
+  // The first round warms the compilers and is not counted.
+  for (let round = 0; round <= ROUNDS; round++) {
+    note(round === 0 ? 'Warming up' : `Round ${round} of ${ROUNDS}`);
+    const runs = [await runCore(stack, 'full'), await runCore(stack, 'quick')];
+    if (round === 0) continue;
+    full.push(runs[0]);
+    quick.push(runs[1]);
+    if (python) script.push(await runReference(python, recording, folder));
   }
-  const ratio = (a: string, b: string) => Number((detect[a] / detect[b]).toFixed(2));
-  say({
-    ratio_detect_warm_over_cold: ratio('1-warm', '1-cold'),
-    ratio_detect_two_children_over_one: ratio('2-warm', '1-warm'),
-  });
+  await stack.close();
+  const core = [medianRun(full), medianRun(quick)];
+  const reference = script.length > 0 ? medianRun(script) : null;
+  say(`\n${speedTable(core, reference, recording)}`);
+  say(`\n${accuracyTable(reference ? [reference, ...core] : core, recording)}`);
+
+  note('The whole road with one worker and with two');
+  const workers = [
+    await runWorkers(1, recording, folder, childPath),
+    await runWorkers(2, recording, folder, childPath),
+  ];
+  say(`\n${workersTable(workers, recording, reference)}`);
 } finally {
   await rm(folder, { recursive: true, force: true });
 }

@@ -8,6 +8,7 @@ import { hashSources } from './source-hash.mjs';
 /** What the bundles are made of. */
 const SOURCES = [
   'scripts/entries',
+  'scripts/bench',
   'tracking',
   'lib',
   'stacks',
