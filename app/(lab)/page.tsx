@@ -2,11 +2,11 @@ import type { Metadata } from 'next';
 import Link from 'next/link';
 import { requireViewer } from '@/auth/page';
 import { may } from '@/auth/viewer';
+import { CampaignDialog } from '@/components/campaigns/campaign-dialog';
 import { ArrivingTable } from '@/components/overview/arriving-table';
 import { OverviewSentence } from '@/components/overview/overview-sentence';
 import { ResultTable } from '@/components/overview/result-table';
 import { WorkList } from '@/components/overview/work-list';
-import { ButtonLink } from '@/components/ui/button';
 import { MarginNote } from '@/components/ui/margin-note';
 import { PathThread } from '@/components/ui/path-thread';
 import { Lede, Section, Sheet } from '@/components/ui/sheet';
@@ -15,6 +15,7 @@ import { formatBytes } from '@/lib/format/bytes';
 import { countOf } from '@/lib/format/count';
 import { labOverview } from '@/models/queries/overview';
 import { labStorage } from '@/models/queries/storage';
+import { addCampaign } from './campaigns/actions';
 import { pathLevels } from './path-levels';
 
 export const metadata: Metadata = { title: 'Overview' };
@@ -52,7 +53,13 @@ export default async function OverviewPage() {
     </>
   );
   const actions = may(viewer, 'create-campaign') ? (
-    <ButtonLink href="/campaigns">Open campaigns</ButtonLink>
+    <CampaignDialog
+      label="New campaign"
+      kind={counts.campaigns === 0 ? 'main' : 'outlined'}
+      title="New campaign"
+      submitLabel="Create campaign"
+      save={addCampaign}
+    />
   ) : null;
   return (
     <>
