@@ -4,9 +4,7 @@ import { useState } from 'react';
 import { SpotsPlot } from '@/components/charts/spots-plot';
 import { TrackViewer } from '@/components/canvas/track-viewer';
 import { useViewer, useViewerStore } from '@/components/canvas/use-viewer';
-import { centreOn, type Point } from '@/components/canvas/view-box';
 import type { ViewedRecording } from '@/components/canvas/viewer-panel';
-import type { ViewerState } from '@/components/canvas/viewer-store';
 import { Answer } from '@/components/data/answer';
 import { useCandidates } from '@/components/data/use-candidates';
 import { useMeasures } from '@/components/data/use-measures';
@@ -57,24 +55,16 @@ export function AnalysisSheet({
   const [well, setWell] = useState<HTMLDivElement | null>(null);
   const linked = LINKED.includes(analysis.stage);
 
-  const show = (frame: number, place: Point, chosen: Pick<ViewerState, 'chosenTrack' | 'chosenEvent'>) => {
+  const show = (frame: number, track: number, event: number | null) => {
     store.goTo(frame);
-    store.set(chosen);
-    const frames = well?.querySelector<HTMLElement>('[role=application]');
-    const { view, zoomed } = store.get();
-    if (frames && view && zoomed) {
-      const size = { width: frames.clientWidth, height: frames.clientHeight };
-      store.set({ view: centreOn(view, place, recording, size) });
-    }
+    store.set({ chosenTrack: track, chosenEvent: event, bring: track });
     well?.scrollIntoView({ block: 'start' });
-    frames?.focus({ preventScroll: true });
+    well?.querySelector<HTMLElement>('[role=application]')?.focus({ preventScroll: true });
   };
-  const showTrack = ({ firstFrame, lastFrame, x_px: x, y_px: y, track }: TrackRowView) =>
-    show((firstFrame + lastFrame) / 2, { x, y }, { chosenTrack: track, chosenEvent: null });
-  const showCandidate = ({ t0_s, x_px: x, y_px: y, trackA, event }: CandidateView) => {
-    const frame = recording.frameIntervalS ? t0_s / recording.frameIntervalS : 0;
-    show(frame, { x, y }, { chosenTrack: trackA, chosenEvent: event });
-  };
+  const showTrack = ({ firstFrame, lastFrame, track }: TrackRowView) =>
+    show((firstFrame + lastFrame) / 2, track, null);
+  const showCandidate = ({ t0_s, trackA, event }: CandidateView) =>
+    show(recording.frameIntervalS ? t0_s / recording.frameIntervalS : 0, trackA, event);
 
   const notYet = (
     <EmptyState>

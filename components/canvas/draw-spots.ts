@@ -9,11 +9,16 @@ export interface FrameSpots {
 }
 
 const CASING = 'rgba(6, 9, 11, 0.78)';
-const RING = '#c8d3d5';
+const THREAD = '#c8d3d5';
+/** Length of the stay that points from the thread to the spot's middle. */
+const STAY_PX = 4;
 const DOUBTFUL = SPOT_EDGE | SPOT_OVERLAP | SPOT_ELONGATED;
 const DASHES_PX = [2.5, 2];
 
-/** A ring around every spot; dashed where its image is cut by the edge, merged or drawn out. */
+/**
+ * A short thread under every spot with a stay that points to its middle, so that the spot itself
+ * stays free; dashed where its image is cut by the edge, merged or drawn out.
+ */
 export function drawSpots(
   ctx: CanvasRenderingContext2D,
   spots: FrameSpots,
@@ -21,12 +26,12 @@ export function drawSpots(
   well: Size,
   spotSigmaPx: number,
 ): void {
-  const radius = Math.max(5, 3 * spotSigmaPx * view.scale);
+  const reach = Math.max(5, 3 * spotSigmaPx * view.scale);
   for (const doubtful of [false, true]) {
     ctx.setLineDash(doubtful ? DASHES_PX : []);
     for (const [colour, widthPx] of [
       [CASING, 3.7],
-      [RING, 1.3],
+      [THREAD, 1.3],
     ] as const) {
       ctx.strokeStyle = colour;
       ctx.lineWidth = widthPx;
@@ -35,10 +40,12 @@ export function drawSpots(
         if (((spots.flags[i] & DOUBTFUL) !== 0) !== doubtful) continue;
         const at = toScreen(view, { x: spots.x[i], y: spots.y[i] });
         const outside =
-          at.x < -radius || at.y < -radius || at.x > well.width + radius || at.y > well.height + radius;
+          at.x < -reach || at.y < -reach || at.x > well.width + reach || at.y > well.height + reach;
         if (outside) continue;
-        ctx.moveTo(at.x + radius, at.y);
-        ctx.arc(at.x, at.y, radius, 0, 2 * Math.PI);
+        ctx.moveTo(at.x - reach, at.y + reach);
+        ctx.lineTo(at.x + reach, at.y + reach);
+        ctx.moveTo(at.x, at.y + reach);
+        ctx.lineTo(at.x, at.y + reach - STAY_PX);
       }
       ctx.stroke();
     }

@@ -65,7 +65,7 @@ export function FrameWell(props: FrameWellProps) {
       const { width, height } = entry.contentRect;
       const next = { width: Math.round(width), height: Math.round(height) };
       if (next.width < 1 || next.height < 1) return;
-      store.set({ view: viewAfterResize(store.get().view, wellSize.current, next, image) });
+      store.set({ well: next, view: viewAfterResize(store.get().view, wellSize.current, next, image) });
       wellSize.current = next;
       setSize(next);
     });

@@ -6,7 +6,8 @@ import type { OverlayScene } from './frame-well';
 import { indexOfTrack, trailAt, type TrackBlock } from './track-block';
 import { TRAIL_FRAMES } from './track-blocks';
 import { trackWords } from './track-words';
-import { toScreen } from './view-box';
+import { centreOn, toScreen, type Size, type ViewBox } from './view-box';
+import type { ViewerState } from './viewer-store';
 
 /** A candidate's mark shows this many frames around its meeting. */
 const MARK_REACH_FRAMES = 8;
@@ -55,6 +56,22 @@ function tagChosen({ ctx, view, well }: OverlayScene, block: TrackBlock, track: 
   const at = toScreen(view, { x: block.x[trail.last], y: block.y[trail.last] });
   const font = getComputedStyle(document.body).fontFamily;
   drawTag(ctx, well.width < 500 ? `track ${track}` : trackWords(block, i), at, well, font);
+}
+
+/**
+ * The view with the track that is to be brought in its middle; the same view where the whole frame
+ * shows anyway; null while the place of the track is not known.
+ */
+export function viewOnTrack(
+  block: TrackBlock | null,
+  { bring, frame, view, well, zoomed }: ViewerState,
+  image: Size,
+): ViewBox | null {
+  const i = block && bring !== null ? indexOfTrack(block, bring) : -1;
+  const trail = { first: 0, last: 0 };
+  if (!block || !view || !well || i < 0 || !trailAt(block, i, frame, 1, trail)) return null;
+  if (!zoomed) return view;
+  return centreOn(view, { x: block.x[trail.last], y: block.y[trail.last] }, image, well);
 }
 
 /** The next track on screen after `current` in the order of their numbers, going round; null without any. */

@@ -10,7 +10,7 @@ import type { OverlayScene } from './frame-well';
 import { createTrackPicker, type TrackPicker } from './pick-track';
 import type { TrackBlock } from './track-block';
 import { TRAIL_FRAMES } from './track-blocks';
-import { drawTrackOverlay, neighbourTrack } from './track-overlay';
+import { drawTrackOverlay, neighbourTrack, viewOnTrack } from './track-overlay';
 import type { Point, Size } from './view-box';
 import { ViewerPanel, type ViewedRecording } from './viewer-panel';
 import type { ViewerStore } from './viewer-store';
@@ -30,6 +30,7 @@ export function TrackViewer(props: TrackViewerProps) {
   const { store, recording, candidates } = props;
   const [version, setVersion] = useState(0);
   const [failure, setFailure] = useState<string | null>(null);
+  const [late, setLate] = useState(false);
   const onChange = useCallback(() => setVersion((n) => n + 1), []);
   const blocks = useTrackWindow(props.analysisId, recording.frames, props.ready, onChange);
   const marks = useMemo(
@@ -50,10 +51,18 @@ export function TrackViewer(props: TrackViewerProps) {
   const [picker] = useState(createPickerCache);
 
   useEffect(() => {
-    const look = () => setFailure(blocks.current?.failure(store.get().frame)?.message ?? null);
+    const look = () => {
+      const state = store.get();
+      const source = blocks.current;
+      setFailure(source?.failure(state.frame)?.message ?? null);
+      setLate(source !== null && source.at(state.frame) === null);
+      if (state.bring === null || state.shown !== state.frame) return;
+      const view = viewOnTrack(source?.at(state.frame) ?? null, state, recording);
+      if (view) store.set({ view, bring: null });
+    };
     look();
     return store.subscribe(look);
-  }, [store, blocks, version]);
+  }, [store, blocks, version, recording]);
 
   const drawOverlay = ({ state, ...scene }: OverlayScene) => {
     const source = blocks.current;
@@ -98,6 +107,10 @@ export function TrackViewer(props: TrackViewerProps) {
             >
               Try again
             </Button>
+          </p>
+        ) : late ? (
+          <p className="loading-bars pointer-events-none absolute right-2 top-2 bg-well/72 px-[6px] py-px text-small text-well-text">
+            tracks are on their way
           </p>
         ) : null
       }

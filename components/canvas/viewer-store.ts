@@ -1,4 +1,4 @@
-import type { ViewBox } from './view-box';
+import type { Size, ViewBox } from './view-box';
 
 /** What a viewer shows at the moment. */
 export interface ViewerState {
@@ -9,7 +9,8 @@ export interface ViewerState {
   /** Where the person is going: 1 forwards, -1 backwards. */
   direction: 1 | -1;
   playing: boolean;
-  /** Null until the well has a size. */
+  /** Null until the well is on the page. */
+  well: Size | null;
   view: ViewBox | null;
   /** Larger than the whole frame. */
   zoomed: boolean;
@@ -18,6 +19,8 @@ export interface ViewerState {
   high: number;
   chosenTrack: number | null;
   chosenEvent: number | null;
+  /** A track to bring into the middle as soon as its place is known; null when that is done. */
+  bring: number | null;
 }
 
 /**
@@ -38,12 +41,14 @@ export class ViewerStore {
       shown: frame,
       direction: 1,
       playing: false,
+      well: null,
       view: null,
       zoomed: false,
       low: initial.low,
       high: initial.high,
       chosenTrack: null,
       chosenEvent: null,
+      bring: null,
     };
   }
 
