@@ -77,7 +77,7 @@ export function TrySheet({ recording, startReason }: TrySheetProps) {
               <Button onClick={() => setFrom(frame)}>Try from this frame on</Button>
             ) : null}
             <span className="text-note text-ink-2 hand:ml-auto">
-              ring: a spot, dashed: cut, merged or drawn out
+              thread under a spot; dashed: cut, merged or drawn out
             </span>
           </div>
         </ViewerPanel>
