@@ -1,0 +1,165 @@
+"""Writes the answers of SciPy that tests/tracking/scipy-oracles compares with: tests/fixtures/scipy/*.json.
+
+Run it with Debian's python3-scipy after changing a case:  /usr/bin/python3 tests/oracles/scipy_oracles.py
+"""
+
+import json
+from pathlib import Path
+
+import numpy as np
+import scipy
+from scipy import ndimage, optimize, stats
+from scipy.interpolate import PchipInterpolator
+from scipy.special import ndtr
+
+SEED = 20240607
+FOLDER = Path(__file__).resolve().parent.parent / "fixtures" / "scipy"
+
+
+def write(name, cases):
+    made_with = {"scipy": scipy.__version__, "numpy": np.__version__, "seed": SEED}
+    text = json.dumps({"madeWith": made_with, "cases": cases}, separators=(",", ":"))
+    (FOLDER / f"{name}.json").write_text(text + "\n")
+
+
+def rounded(values, digits=9):
+    return [float(f"{v:.{digits}g}") for v in np.ravel(values)]
+
+
+def filters(random):
+    """Matched filter: pixel-integrated Gaussian cut at ceil(3 sigma), zeros outside, noise 1 at the border too."""
+    cases = []
+    for sigma, width, height in [(0.7, 17, 12), (1.2, 24, 19), (2.0, 31, 9), (1.2, 40, 1), (1.5, 4, 3)]:
+        noise = np.round(random.normal(size=(height, width)), 3)
+        reach = max(2, int(np.ceil(3 * sigma)))
+        k = np.arange(-reach, reach + 1)
+        weight = ndtr((k + 0.5) / sigma) - ndtr((k - 0.5) / sigma)
+        weight /= np.sqrt(np.sum(weight**2))
+        response = noise
+        for axis in (0, 1):
+            squares = ndimage.correlate1d(np.ones_like(noise), weight**2, axis, mode="constant", cval=0.0)
+            response = ndimage.correlate1d(response, weight, axis, mode="constant", cval=0.0) / np.sqrt(squares)
+        # A Gaussian over pixels is nearly a sampled one that is wider by the variance of a pixel, 1/12.
+        wide = np.sqrt(sigma**2 + 1 / 12)
+        sampled = np.exp(-0.5 * (k / wide) ** 2)
+        sampled /= sampled.sum()
+        smooth = ndimage.gaussian_filter(noise, wide, mode="constant", cval=0.0, truncate=(reach + 0.25) / wide)
+        cases.append(
+            {
+                "sigmaPx": sigma,
+                "width": width,
+                "height": height,
+                "noise": rounded(noise),
+                "response": rounded(response),
+                "gaussian": rounded(smooth / np.sum(sampled**2)),
+                "reach": reach,
+            }
+        )
+    return cases
+
+
+def assignment(random):
+    """Rows may stay alone at cost 0: each has a column of its own beside the shared ones."""
+    cases = []
+    shapes = [(int(random.integers(1, 11)), int(random.integers(1, 11))) for _ in range(300)]
+    for trial, (rows, columns) in enumerate(shapes + [(60, 45), (45, 60), (50, 50)]):
+        cost = np.round(random.uniform(-5, 3, size=(rows, columns)), 2)
+        if trial % 3 == 1:
+            cost = np.round(cost)
+        if trial % 10 == 2:
+            cost[:] = cost[0, 0]
+        forbidden = random.uniform(size=cost.shape) < random.choice([0.0, 0.3, 0.7, 0.95, 1.0])
+        cost[forbidden] = np.inf
+        alone = np.full((rows, rows), np.inf)
+        np.fill_diagonal(alone, 0.0)
+        table = np.hstack([cost, alone])
+        row, column = optimize.linear_sum_assignment(table)
+        entries = [[int(i), int(j), float(cost[i, j])] for i, j in zip(*np.nonzero(~forbidden))]
+        total = round(float(table[row, column].sum()), 6)
+        cases.append({"rows": rows, "columns": columns, "entries": entries, "total": total})
+    return cases
+
+
+def tails():
+    chi2 = [
+        [x, k, float(stats.chi2.sf(x, k))]
+        for k in (1, 2, 3, 4, 5, 8, 15, 30, 61)
+        for x in (0.01, 0.5, 1.0, 3.84, 8.1, 20.0, 45.0, 90.0)
+    ]
+    poisson = [
+        [mu, n, float(stats.poisson.sf(n - 1, mu))]
+        for mu in (0.01, 0.3, 1.0, 4.5, 20.0, 80.0)
+        for n in (0, 1, 2, 5, 12, 40, 100)
+    ]
+    return {"chi2": chi2, "poisson": poisson}
+
+
+def pchip(random):
+    cases = []
+    for trial in range(12):
+        n = int(random.integers(3, 12))
+        x = np.cumsum(random.uniform(0.05, 2, size=n))
+        y = random.normal(size=n)
+        if trial % 3 == 0:
+            y = np.cumsum(np.abs(y))
+        if trial % 4 == 1:
+            y = np.round(y)
+        x, y = np.round(x, 4), np.round(y, 4)
+        at = np.round(np.concatenate([x, random.uniform(x[0], x[-1], size=15)]), 6)
+        at = np.clip(at, x[0], x[-1])
+        cases.append(
+            {"x": x.tolist(), "y": y.tolist(), "at": at.tolist(), "value": PchipInterpolator(x, y)(at).tolist()}
+        )
+    return cases
+
+
+def wilson():
+    cases = []
+    for k, n in [(0, 1), (1, 1), (0, 10), (3, 10), (10, 10), (17, 40), (1, 1000), (999, 1000), (5000, 10000)]:
+        interval = stats.binomtest(k, n).proportion_ci(confidence_level=0.95, method="wilson")
+        cases.append([k, n, float(interval.low), float(interval.high)])
+    return cases
+
+
+def robust(random):
+    cases = []
+    for n in (1, 2, 5, 8, 33, 100):
+        values = np.round(random.standard_t(3, size=n), 4)
+        scale = float(stats.median_abs_deviation(values, scale="normal"))
+        p = [0.0, 0.025, 0.31, 0.5, 0.841, 1.0]
+        cases.append(
+            {
+                "values": values.tolist(),
+                "median": float(np.median(values)),
+                "madScale": scale,
+                "p": p,
+                "quantiles": np.quantile(values, p, method="linear").tolist(),
+            }
+        )
+    return cases
+
+
+def least_squares(random):
+    cases = []
+    for rows, columns in [(5, 2), (8, 3), (12, 1), (20, 3), (9, 2)] * 6:
+        a = np.round(random.normal(size=(rows, columns)), 3)
+        b = np.round(random.normal(size=rows) + a @ np.abs(random.normal(size=columns)), 3)
+        x, residual = optimize.nnls(a, b)
+        cases.append({"a": a.tolist(), "b": b.tolist(), "x": x.tolist(), "residual": float(residual)})
+    return cases
+
+
+def main():
+    FOLDER.mkdir(parents=True, exist_ok=True)
+    # A stream each: a change of one set of cases leaves the others as they are.
+    streams = [np.random.default_rng([SEED, i]) for i in range(5)]
+    write("filters", filters(streams[0]))
+    write("assignment", assignment(streams[1]))
+    write("tails", tails())
+    write("pchip", pchip(streams[2]))
+    write("wilson", wilson())
+    write("robust", robust(streams[3]))
+    write("non-negative-least-squares", least_squares(streams[4]))
+
+
+main()
