@@ -15,6 +15,7 @@ import { arriveRecording, checked, CONDITIONS, SCENE } from '../helpers/demo-rec
 import { freshDatabase, type FreshDatabase } from '../helpers/fresh-database';
 import { makeLab, type LabRows } from '../helpers/lab-rows';
 import { bundle } from '../helpers/worker-process';
+import { until } from '../helpers/until';
 
 let db: FreshDatabase;
 let lab: LabRows;
@@ -83,7 +84,11 @@ test('what is no stack is refused with its sentence and leaves nothing behind', 
       detail: 'This is not a TIFF, PNG, ZIP, NPY or HDF5 file (first bytes: 25 50 44 46).',
     },
   });
-  expect(await filesOf(recording.id)).toEqual([]);
+  // The verdict is stored first, the bytes go after it.
+  await until(
+    () => filesOf(recording.id),
+    (files) => files.length === 0,
+  );
 });
 
 test('a stack whose checksum differs from the sender’s is refused, whatever else it is', async () => {
@@ -94,7 +99,11 @@ test('a stack whose checksum differs from the sender’s is refused, whatever el
     code: 'CHECKSUM',
     detail: expect.stringMatching(/^SHA-256 differs: got [0-9a-f]{12}\.\., expected abababababab\.\./),
   });
-  expect(await filesOf(recording.id)).toEqual([]);
+  // The verdict is stored first, the bytes go after it.
+  await until(
+    () => filesOf(recording.id),
+    (files) => files.length === 0,
+  );
 });
 
 test('the checksum of an intact stack agrees, in capital letters too', async () => {
