@@ -17,6 +17,9 @@ export interface ProjectedTrails {
 const EDGE_PX = 12;
 /** Points nearer than this to the one before add work but no shape that an eye could see. */
 const MERGE_PX = 4;
+/** A point nearer than this to the straight line between its neighbours is left out, up to such a length of line. */
+const STRAIGHT_PX = 0.4;
+const STRAIGHT_LENGTH_PX = 40;
 
 let room: ProjectedTrails = {
   count: 0,
@@ -62,6 +65,8 @@ export function projectTrails(
       const near = n > begin && Math.abs(x - xs[n - 1]) < MERGE_PX && Math.abs(y - ys[n - 1]) < MERGE_PX;
       // The newest point always counts: it must sit on its spot.
       if (near && k < trail.last) continue;
+      // Where the path goes straight on, its end moves on instead of a point being added.
+      if (n - begin >= 2 && isStraight(xs, ys, n, x, y)) n -= 1;
       xs[n] = x;
       ys[n] = y;
       n += 1;
@@ -77,4 +82,17 @@ export function projectTrails(
   start[count] = n;
   room.count = count;
   return room;
+}
+
+/** Whether the last of `n` points lies on the line from the one before it to (x, y). */
+function isStraight(xs: Float32Array, ys: Float32Array, n: number, x: number, y: number): boolean {
+  const dx = x - xs[n - 2];
+  const dy = y - ys[n - 2];
+  const length = Math.sqrt(dx * dx + dy * dy);
+  if (length < 1e-6 || length > STRAIGHT_LENGTH_PX) return false;
+  const bx = xs[n - 1] - xs[n - 2];
+  const by = ys[n - 1] - ys[n - 2];
+  const along = (bx * dx + by * dy) / length;
+  const off = Math.abs(bx * dy - by * dx) / length;
+  return off < STRAIGHT_PX && along > 0 && along < length;
 }
