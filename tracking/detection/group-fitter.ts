@@ -3,6 +3,7 @@ import { FitWindow } from './fit-window';
 import { JOINT_SPOTS_MOST } from './fit-work';
 import { JointFit } from './joint-fit';
 import { createSecondLook, SHAPE_ERROR } from './second-look';
+import { createSpotKernel } from './spot-kernel';
 import type { SpotPainter } from './spot-painter';
 import type { SpotTable } from './spot-table';
 
@@ -58,6 +59,7 @@ export function createGroupFitter(options: GroupFitterOptions, painter: SpotPain
   const window = new FitWindow();
   const joint = new JointFit(spotSigmaPx, reach, 1);
   const look = createSecondLook(spotSigmaPx, readVariance);
+  const { squares } = createSpotKernel(spotSigmaPx);
   const centresX = new Float64Array(JOINT_SPOTS_MOST);
   const centresY = new Float64Array(JOINT_SPOTS_MOST);
   const bestX = new Float64Array(JOINT_SPOTS_MOST);
@@ -83,6 +85,13 @@ export function createGroupFitter(options: GroupFitterOptions, painter: SpotPain
   const load = (pictures: FramePictures, count: number) => {
     const { electrons, model, usable } = pictures;
     window.load(electrons, model, usable, width, height, readVariance, centresX, centresY, count, reach);
+  };
+
+  /** Matched-filter response to a spot by itself, in units of the background's noise. */
+  const responseTo = (xPx: number, yPx: number, brightnessE: number, { bare }: FramePictures) => {
+    const x = Math.max(0, Math.min(width - 1, Math.round(xPx)));
+    const y = Math.max(0, Math.min(height - 1, Math.round(yPx)));
+    return (brightnessE * squares) / Math.sqrt(bare[y * width + x] + readVariance);
   };
 
   const start = (table: SpotTable, members: Int32Array, count: number) => {
@@ -247,7 +256,10 @@ export function createGroupFitter(options: GroupFitterOptions, painter: SpotPain
         table.y[i] = bestY[k];
         table.n[i] = bestN[k];
       }
-      const fresh = table.add(bestX[count], bestY[count], bestN[count], Math.max(response, 0));
+      // What was split off an elongated spot left no peak: its response is the one that its light would have.
+      const shown =
+        response < RESPONSE_TRIED ? responseTo(bestX[count], bestY[count], bestN[count], pictures) : response;
+      const fresh = table.add(bestX[count], bestY[count], bestN[count], shown);
       table.group[fresh] = table.group[members[0]];
       members[count] = fresh;
     }

@@ -111,7 +111,8 @@ describe('a recording ends in a clear result', () => {
         const stack = [0, 1, 2].map((f) => frameOf(kind, width, height, seed + f));
         expectClear(analyse(stack), 3);
       }),
-      { ...RUNS, numRuns: 40 },
+      // The example made a spot without response once: two lights in 4 x 4 px that only the fit tells apart.
+      { ...RUNS, numRuns: 40, examples: [[0, 'spots', 4, 4, false]] },
     );
   });
 
