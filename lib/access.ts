@@ -83,6 +83,16 @@ export const ACTIONS = {
   'see-queue': { scope: 'read', grants: { principal_investigator: 'yes', lab_administrator: 'yes' } },
   'see-storage': { scope: 'read', grants: { principal_investigator: 'yes', lab_administrator: 'yes' } },
   'see-people': { scope: 'read', grants: { principal_investigator: 'yes', lab_administrator: 'yes' } },
+  'see-audit': {
+    scope: 'read',
+    grants: {
+      experimentalist: 'own',
+      annotator: 'own',
+      analyst: 'own',
+      principal_investigator: 'yes',
+      lab_administrator: 'yes',
+    },
+  },
   'manage-people': { scope: 'write', grants: { lab_administrator: 'yes' } },
   'own-tokens': {
     scope: 'write',

@@ -1,7 +1,7 @@
 import { z } from 'zod';
 import type { Action } from '@/lib/access';
 import { campaignCreateSchema, campaignPatchSchema } from '@/lib/schemas/campaign';
-import { rolesPatchSchema, tokenCreateSchema } from '@/lib/schemas/lab';
+import { memberCreateSchema, rolesPatchSchema, tokenCreateSchema } from '@/lib/schemas/lab';
 import * as lists from '@/lib/schemas/list-query';
 import { analysisCreateSchema, recipeCreateSchema, tryRecipeSchema } from '@/lib/schemas/recipe';
 import * as recordings from '@/lib/schemas/recording';
@@ -274,6 +274,14 @@ export const ROUTES = {
     query: lists.memberListQuery,
     answer: listOf(lab.memberViewSchema),
   },
+  'POST /people': {
+    action: 'manage-people',
+    summary: 'Add a person; the link that opens a new account is shown in this answer only',
+    body: memberCreateSchema,
+    answer: lab.invitedMemberViewSchema,
+    status: 201,
+    idempotent: false,
+  },
   'GET /people/{memberId}': { action: 'see-people', summary: 'A member', answer: lab.memberViewSchema },
   'PATCH /people/{memberId}': {
     action: 'manage-people',
@@ -281,6 +289,18 @@ export const ROUTES = {
     body: rolesPatchSchema,
     answer: lab.memberViewSchema,
     ifMatch: true,
+  },
+  'DELETE /people/{memberId}': {
+    action: 'manage-people',
+    summary: 'Remove a member: their sessions end, and their tokens of this laboratory',
+    status: 204,
+  },
+  'POST /people/{memberId}/invitation': {
+    action: 'manage-people',
+    summary: 'A new invitation link in place of the one before; it is shown in this answer only',
+    answer: lab.invitationViewSchema,
+    status: 201,
+    idempotent: false,
   },
   'GET /tokens': {
     action: 'own-tokens',
@@ -297,6 +317,12 @@ export const ROUTES = {
     idempotent: false,
   },
   'DELETE /tokens/{tokenId}': { action: 'own-tokens', summary: 'Revoke a token', status: 204 },
+  'GET /audit': {
+    action: 'see-audit',
+    summary: 'Who did what, newest first; without the right to see everybody’s, your own',
+    query: lists.auditListQuery,
+    answer: listOf(lab.auditViewSchema),
+  },
   'GET /jobs': {
     action: 'see-queue',
     summary: 'Work of the laboratory',

@@ -7,30 +7,43 @@ import { api } from '@/components/data/api-client';
 import { SearchField } from '@/components/lists/search-field';
 import { useList } from '@/components/lists/use-list';
 import { Button } from '@/components/ui/button';
-import { Checkbox } from '@/components/ui/choice';
-import { Dialog } from '@/components/ui/dialog';
+import { ConfirmDialog } from '@/components/ui/dialog';
 import { Moment } from '@/components/ui/moment';
-import { EmptyState, ErrorState } from '@/components/ui/page-states';
+import { EmptyState } from '@/components/ui/page-states';
 import { Pager } from '@/components/ui/pager';
 import { Cell, HeadCell, Row, Table } from '@/components/ui/table';
-import { ROLE_NAMES, ROLES, type Role } from '@/lib/access';
+import { ROLE_NAMES } from '@/lib/access';
 import type { ListShape } from '@/lib/lists/list-state';
-import type { MemberView } from '@/lib/views/lab-view';
+import type { InvitationView, MemberView } from '@/lib/views/lab-view';
+import { InvitationLink } from './invitation-link';
+import { InviteDialog } from './invite-dialog';
+import { RolesDialog } from './roles-dialog';
 
 const SHAPE: ListShape = { sorts: ['name', 'createdAt'], defaultSort: 'name', filters: ['q'] };
 
 /** People of the laboratory with their roles; an administrator changes them here. */
 export function PeopleTable({ mayChange, viewerId }: { mayChange: boolean; viewerId: string }) {
   const list = useList<MemberView>('/api/v1/people', SHAPE);
+  const client = useQueryClient();
+  const [inviting, setInviting] = useState(false);
   const [editing, setEditing] = useState<MemberView | null>(null);
+  const [removing, setRemoving] = useState<MemberView | null>(null);
+  const [renewing, setRenewing] = useState<MemberView | null>(null);
+  const [link, setLink] = useState<{ name: string; invitation: InvitationView } | null>(null);
+  const refresh = () => client.invalidateQueries({ queryKey: ['list'] });
   return (
     <>
-      <div className="pb-1">
+      <div className="flex flex-wrap items-end justify-between gap-2 pb-1">
         <SearchField
           label="Search people"
           value={list.state.filters.q ?? ''}
           onSearch={(q) => list.filter('q', q)}
         />
+        {mayChange ? (
+          <Button kind="main" onClick={() => setInviting(true)}>
+            Invite
+          </Button>
+        ) : null}
       </div>
       <Answer query={list.query} what="the people">
         {({ items }) =>
@@ -58,13 +71,24 @@ export function PeopleTable({ mayChange, viewerId }: { mayChange: boolean; viewe
                     <Cell>{member.roles.map((role) => ROLE_NAMES[role]).join(', ')}</Cell>
                     <Cell quiet narrow="hide">
                       <Moment at={member.createdAt} />
+                      {member.invitedUntil ? (
+                        <span className="block text-small">
+                          invited, link ends <Moment at={member.invitedUntil} />
+                        </span>
+                      ) : null}
                     </Cell>
                     {mayChange ? (
                       <Cell numeric>
                         {member.person.id === viewerId ? (
                           <span className="text-small text-ink-3">your own roles</span>
                         ) : (
-                          <Button onClick={() => setEditing(member)}>Change roles</Button>
+                          <span className="flex flex-wrap justify-end gap-2">
+                            {member.invitedUntil ? (
+                              <Button onClick={() => setRenewing(member)}>New link</Button>
+                            ) : null}
+                            <Button onClick={() => setEditing(member)}>Change roles</Button>
+                            <Button onClick={() => setRemoving(member)}>Remove</Button>
+                          </span>
                         )}
                       </Cell>
                     ) : null}
@@ -76,69 +100,40 @@ export function PeopleTable({ mayChange, viewerId }: { mayChange: boolean; viewe
         }
       </Answer>
       <Pager label="people" backHref={list.backHref} nextHref={list.nextHref} />
-      {editing ? <RolesDialog key={editing.id} member={editing} onClose={() => setEditing(null)} /> : null}
+      {inviting ? <InviteDialog onClose={() => setInviting(false)} onDone={refresh} /> : null}
+      {editing ? (
+        <RolesDialog key={editing.id} member={editing} onClose={() => setEditing(null)} onDone={refresh} />
+      ) : null}
+      <ConfirmDialog
+        open={removing !== null}
+        onClose={() => setRemoving(null)}
+        question={`Remove ${removing?.person.name ?? ''}?`}
+        keep="Keep them"
+        act="Remove them"
+        onAct={async () => {
+          await api(`/api/v1/people/${removing!.id}`, { method: 'DELETE' });
+          await refresh();
+        }}
+      >
+        Their sessions end and their tokens of this laboratory are revoked. What they made stays, with their
+        name. They can be invited again.
+      </ConfirmDialog>
+      <ConfirmDialog
+        open={renewing !== null}
+        onClose={() => setRenewing(null)}
+        question={`A new link for ${renewing?.person.name ?? ''}?`}
+        keep="Keep the old one"
+        act="Make a new link"
+        onAct={async () => {
+          const path = `/api/v1/people/${renewing!.id}/invitation`;
+          const invitation = await api<InvitationView>(path, { method: 'POST' });
+          setLink({ name: renewing!.person.name, invitation });
+          await refresh();
+        }}
+      >
+        The link before it opens nothing any more.
+      </ConfirmDialog>
+      {link ? <InvitationLink {...link} onClose={() => setLink(null)} /> : null}
     </>
-  );
-}
-
-function RolesDialog({ member, onClose }: { member: MemberView; onClose: () => void }) {
-  const client = useQueryClient();
-  const [roles, setRoles] = useState<readonly Role[]>(member.roles);
-  const [problem, setProblem] = useState<string | null>(null);
-  const [busy, setBusy] = useState(false);
-  async function save() {
-    setBusy(true);
-    setProblem(null);
-    try {
-      await api(`/api/v1/people/${member.id}`, {
-        method: 'PATCH',
-        body: { roles },
-        revision: member.revision,
-      });
-      await client.invalidateQueries({ queryKey: ['list'] });
-      onClose();
-    } catch (error) {
-      setProblem(error instanceof Error ? error.message : 'That did not work.');
-    } finally {
-      setBusy(false);
-    }
-  }
-  return (
-    <Dialog
-      open
-      onClose={onClose}
-      title={`Roles of ${member.person.name}`}
-      actions={
-        <>
-          <Button kind="bare" onClick={onClose}>
-            Leave them
-          </Button>
-          <Button
-            kind="main"
-            busy={busy}
-            reason={roles.length === 0 ? 'At least one role.' : null}
-            onClick={() => void save()}
-          >
-            Save roles
-          </Button>
-        </>
-      }
-    >
-      <p className="pb-2">Their sessions end, so that the new rights hold at once. What they made stays.</p>
-      <fieldset className="flex flex-col gap-1">
-        <legend className="sr-only">Roles</legend>
-        {ROLES.map((role) => (
-          <Checkbox
-            key={role}
-            label={ROLE_NAMES[role]}
-            checked={roles.includes(role)}
-            onChange={(event) =>
-              setRoles(event.target.checked ? [...roles, role] : roles.filter((other) => other !== role))
-            }
-          />
-        ))}
-      </fieldset>
-      {problem ? <ErrorState live what={problem} /> : null}
-    </Dialog>
   );
 }

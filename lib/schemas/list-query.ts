@@ -91,6 +91,14 @@ export const jobListQuery = listQuery(['createdAt', 'updatedAt'], {
   state: states(['waiting', 'running', 'done', 'failed', 'stopped']),
   kind: text,
 });
+/** `action` is one kind of act, as `run.removed`, or all about one kind of thing, as `run`. */
+export const auditListQuery = listQuery(['createdAt'], {
+  action: z
+    .string()
+    .regex(/^[a-z-]{1,40}(\.[a-z-]{1,40})?$/, 'action must be like run.removed, or run.')
+    .optional(),
+  person: idFilter('person'),
+});
 export const workerListQuery = listQuery(['startedAt', 'heartbeatAt'], {});
 export const uploadListQuery = listQuery(['createdAt'], {});
 

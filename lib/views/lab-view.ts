@@ -19,8 +19,20 @@ export const memberViewSchema = z.object({
   ...itemFields,
   person: personSchema.extend({ email: z.string() }),
   roles: z.array(z.enum(ROLES)),
+  /** Null once the person has chosen a password; before that, when the invitation ends or ended. */
+  invitedUntil: z.iso.datetime().nullable(),
 });
 export type MemberView = z.infer<typeof memberViewSchema>;
+
+/** A link that opens an account; the answer that holds it is the only place where it stands. */
+export const invitationViewSchema = z.object({ url: z.url(), expiresAt: z.iso.datetime() });
+export type InvitationView = z.infer<typeof invitationViewSchema>;
+
+/** `invitation` is null where the person can sign in already, or was invited by another laboratory. */
+export const invitedMemberViewSchema = memberViewSchema.extend({
+  invitation: invitationViewSchema.nullable(),
+});
+export type InvitedMemberView = z.infer<typeof invitedMemberViewSchema>;
 
 export const tokenViewSchema = z.object({
   id: z.uuid(),
@@ -34,6 +46,17 @@ export const tokenViewSchema = z.object({
   revokedAt: z.iso.datetime().nullable(),
 });
 export type TokenView = z.infer<typeof tokenViewSchema>;
+
+export const auditViewSchema = z.object({
+  id: z.uuid(),
+  createdAt: z.iso.datetime(),
+  /** Null where nobody was signed in. */
+  person: personSchema.nullable(),
+  action: z.string(),
+  subject: z.object({ kind: z.string(), id: z.string().nullable(), name: z.string().nullable() }),
+  detail: z.record(z.string(), z.unknown()),
+});
+export type AuditView = z.infer<typeof auditViewSchema>;
 
 export const workerViewSchema = z.object({
   id: z.uuid(),

@@ -7,20 +7,27 @@ import type { MemberView } from '@/lib/views/lab-view';
 import { getSequelize } from '../database';
 import { changeRow, type Change } from './change-row';
 import { containing, listPage } from './list-page';
-import { itemOf, type ItemRow } from './person';
-import { selectRow } from './select';
+import { iso, itemOf, type ItemRow } from './person';
+import { execute, selectRow } from './select';
 import { writeAudit } from './write-audit';
 
 interface Row extends ItemRow {
   person: PersonView & { email: string };
   roles: Role[];
+  invited_until: Date | null;
 }
 
 const SELECT = `m.id, m.roles, m.revision, m.created_at, m.updated_at,
-  json_build_object('id', u.id, 'name', u.name, 'email', u.email) AS person`;
+  json_build_object('id', u.id, 'name', u.name, 'email', u.email) AS person,
+  CASE WHEN u.password_hash IS NULL THEN coalesce(u.invitation_expires_at, u.created_at) END AS invited_until`;
 const FROM = 'memberships m JOIN users u ON u.id = m.user_id';
 
-const viewOf = (row: Row): MemberView => ({ ...itemOf(row), person: row.person, roles: row.roles });
+const viewOf = (row: Row): MemberView => ({
+  ...itemOf(row),
+  person: row.person,
+  roles: row.roles,
+  invitedUntil: iso(row.invited_until),
+});
 
 export async function listMembers(
   labId: string,
@@ -90,6 +97,44 @@ export async function changeRoles(change: Change, roles: Role[], byUserId: strin
     );
   });
   return getMember(change.labId, change.id);
+}
+
+/**
+ * Ends a membership: the person's sessions end and their tokens of this laboratory are revoked; what they made
+ * stays, with their name. An invitation that opened this laboratory alone is closed.
+ * @throws LabError FORBIDDEN for oneself, STATE when no administrator would be left.
+ */
+export async function removeMember(labId: string, id: string, byUserId: string): Promise<void> {
+  await getSequelize().transaction(async (transaction) => {
+    const administrators = await lockAdministrators(labId, transaction);
+    const { person, roles } = await getMember(labId, id);
+    if (person.id === byUserId) {
+      throw new LabError('FORBIDDEN', 'Nobody removes themselves: ask another administrator.');
+    }
+    if (roles.includes('lab_administrator') && administrators.every((other) => other === id)) {
+      throw new LabError('STATE', 'The laboratory would be left without an administrator.');
+    }
+    const both = [labId, person.id];
+    await execute('DELETE FROM memberships WHERE lab_id = $1 AND user_id = $2', both, transaction);
+    await execute(
+      `UPDATE api_tokens SET revoked_at = now(), updated_at = now()
+       WHERE lab_id = $1 AND user_id = $2 AND revoked_at IS NULL`,
+      both,
+      transaction,
+    );
+    const others = 'EXISTS (SELECT FROM memberships m WHERE m.user_id = users.id)';
+    await execute(
+      `UPDATE users SET session_version = session_version + 1, updated_at = now(),
+         invitation_hash = CASE WHEN ${others} THEN invitation_hash END,
+         invitation_expires_at = CASE WHEN ${others} THEN invitation_expires_at END
+       WHERE id = $1`,
+      [person.id],
+      transaction,
+    );
+    const detail = { name: person.name, email: person.email, roles };
+    const what = { action: 'member.removed', subjectKind: 'membership', subjectId: id, detail };
+    await writeAudit({ labId, userId: byUserId, ...what }, transaction);
+  });
 }
 
 /** Ids of the memberships with the administrator's role; two changes at once can't remove both. */

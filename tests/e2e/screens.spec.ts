@@ -40,7 +40,7 @@ const PAGES: Partial<Record<Role, string[]>> = {
     '/nowhere',
   ],
   annotator: ['/lab/storage'],
-  lab_administrator: ['/', '/lab', '/lab/tokens', '/lab/queue', '/lab/storage'],
+  lab_administrator: ['/', '/lab', '/lab/tokens', '/lab/queue', '/lab/storage', '/lab/audit'],
 };
 
 let browser: Browser;

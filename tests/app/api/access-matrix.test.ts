@@ -50,7 +50,14 @@ async function makeThings(): Promise<Things> {
     state: 'done',
     stage: 'done',
   });
-  const membership = await models().Membership.findOne({ where: { userId: maker.userId, labId: own.labId } });
+  // Somebody who asks nothing here: a member that is removed can't ask any more.
+  const guest = await models().User.create({ id: newId(), name: 'Guest', email: `${newId()}@lab.test` });
+  const membership = await models().Membership.create({
+    id: newId(),
+    labId: own.labId,
+    userId: guest.id,
+    roles: ['annotator'],
+  });
   const token = await models().ApiToken.create({
     id: newId(),
     labId: own.labId,
@@ -75,7 +82,7 @@ async function makeThings(): Promise<Things> {
     runId: run.id,
     recordingId: recording.id,
     analysisId: analysis.id,
-    memberId: membership!.id,
+    memberId: membership.id,
     tokenId: token.id,
     upload: upload.id,
     frame: '0',
@@ -99,6 +106,7 @@ const BODIES: Partial<Record<RouteKey, unknown>> = {
   'POST /recordings/{recordingId}/analyses': {},
   'POST /recipes': { name: 'Recipe', fields: {} },
   'PATCH /people/{memberId}': { roles: ['analyst'] },
+  'POST /people': { name: 'New', email: 'new@lab.test', roles: ['analyst'] },
   'POST /tokens': { name: 'New' },
 };
 

@@ -1,4 +1,5 @@
-import { changeRoles, getMember } from '@/models/queries/people';
+import { done } from '@/auth/answer';
+import { changeRoles, getMember, removeMember } from '@/models/queries/people';
 import { memberRoute, methods } from '@/app/api/member-route';
 
 export const dynamic = 'force-dynamic';
@@ -10,4 +11,8 @@ export const { GET, POST, PUT, PATCH, DELETE } = methods({
   PATCH: memberRoute('PATCH /people/{memberId}', async ({ viewer, params, body, ifMatch }) =>
     changeRoles({ labId: viewer.labId, id: params.memberId, ifMatch }, body.roles, viewer.userId),
   ),
+  DELETE: memberRoute('DELETE /people/{memberId}', async ({ viewer, params }) => {
+    await removeMember(viewer.labId, params.memberId, viewer.userId);
+    return done();
+  }),
 });

@@ -1,0 +1,100 @@
+'use client';
+
+import { useQuery } from '@tanstack/react-query';
+import { Answer } from '@/components/data/answer';
+import { api } from '@/components/data/api-client';
+import { useList } from '@/components/lists/use-list';
+import { SelectField } from '@/components/ui/choice';
+import { Moment } from '@/components/ui/moment';
+import { EmptyState } from '@/components/ui/page-states';
+import { Pager } from '@/components/ui/pager';
+import { Cell, HeadCell, Row, Table } from '@/components/ui/table';
+import { ROLE_NAMES, type Role } from '@/lib/access';
+import { AUDIT_KINDS, AUDIT_WORDS } from '@/lib/audit-words';
+import type { ListShape } from '@/lib/lists/list-state';
+import type { ListView } from '@/lib/views/common';
+import type { AuditView, MemberView } from '@/lib/views/lab-view';
+
+const SHAPE: ListShape = {
+  sorts: ['createdAt'],
+  defaultSort: '-createdAt',
+  filters: ['action', 'person'],
+};
+
+/** Who did what in the laboratory, newest first. */
+export function AuditTable({ ofEverybody }: { ofEverybody: boolean }) {
+  const list = useList<AuditView>('/api/v1/audit', SHAPE);
+  const people = useQuery({
+    queryKey: ['people-to-choose'],
+    queryFn: ({ signal }) => api<ListView<MemberView>>('/api/v1/people?limit=200&sort=name', { signal }),
+    enabled: ofEverybody,
+  });
+  const persons = (people.data?.items ?? []).map(({ person }) => ({ value: person.id, label: person.name }));
+  return (
+    <>
+      <div className="flex flex-wrap gap-3 pb-2">
+        <SelectField
+          label="What was done"
+          options={AUDIT_KINDS}
+          value={list.state.filters.action ?? ''}
+          onChange={(event) => list.filter('action', event.target.value)}
+        />
+        {ofEverybody ? (
+          <SelectField
+            label="By whom"
+            options={[{ value: '', label: 'Everybody' }, ...persons]}
+            value={list.state.filters.person ?? ''}
+            onChange={(event) => list.filter('person', event.target.value)}
+          />
+        ) : null}
+      </div>
+      <Answer query={list.query} what="the audit trail">
+        {({ items }) =>
+          items.length === 0 ? (
+            <EmptyState>Nothing of this kind has been written down.</EmptyState>
+          ) : (
+            <Table label="Audit trail">
+              <thead>
+                <tr>
+                  <HeadCell sort={list.sort('createdAt')}>When</HeadCell>
+                  <HeadCell>Who</HeadCell>
+                  <HeadCell>What</HeadCell>
+                </tr>
+              </thead>
+              <tbody>
+                {items.map((entry) => (
+                  <Row key={entry.id}>
+                    <Cell quiet>
+                      <Moment at={entry.createdAt} />
+                    </Cell>
+                    <Cell head>{entry.person?.name ?? 'nobody signed in'}</Cell>
+                    <Cell>
+                      {AUDIT_WORDS[entry.action] ?? entry.action}
+                      {entry.subject.name ? <strong> {entry.subject.name}</strong> : null}
+                      <RolesThen detail={entry.detail} />
+                    </Cell>
+                  </Row>
+                ))}
+              </tbody>
+            </Table>
+          )
+        }
+      </Answer>
+      <Pager label="the audit trail" backHref={list.backHref} nextHref={list.nextHref} />
+    </>
+  );
+}
+
+/** Roles that an act gave, and those before it. */
+function RolesThen({ detail }: { detail: Record<string, unknown> }) {
+  const { roles, before, after } = detail;
+  const text = Array.isArray(before)
+    ? `${rolesText(before)}, then ${rolesText(after)}`
+    : Array.isArray(roles)
+      ? rolesText(roles)
+      : null;
+  return text ? <span className="block text-small text-ink-3">{text}</span> : null;
+}
+
+const rolesText = (roles: unknown): string =>
+  Array.isArray(roles) ? roles.map((role) => ROLE_NAMES[role as Role] ?? String(role)).join(', ') : '';
