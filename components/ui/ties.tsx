@@ -22,8 +22,8 @@ function measure(root: HTMLElement): Tie[] {
     if (!note) continue;
     const from = row.getBoundingClientRect();
     const to = note.getBoundingClientRect();
-    // Under the page there is no gutter to run through, and a hidden note has no box.
-    if (to.width === 0 || to.left < from.right) continue;
+    // Under the page there is no gutter to run through, and what is hidden has no box.
+    if (to.width === 0 || from.width === 0 || to.left < from.right) continue;
     const ends = {
       fromX: from.right - sheet.left,
       fromY: from.bottom - sheet.top - 0.75,
