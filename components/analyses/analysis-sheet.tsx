@@ -80,7 +80,7 @@ export function AnalysisSheet({
         state={<StateWord state={analysis.state}>{STATE_WORDS[analysis.state]}</StateWord>}
         aside={<span className="text-note">{conditions}</span>}
       >
-        {analysis.recordingName}, {analysis.recipeName ?? 'own settings'}
+        {analysis.recordingName}, {analysis.recipeName ?? 'unnamed recipe'}
       </PageTitle>
       {isError ? <StaleLine what="The progress may be out of date.">It is asked for again.</StaleLine> : null}
       <ProgressPanel analysis={analysis} stopReason={stopReason} />

@@ -76,7 +76,7 @@ export function AnalysisRow({ analysis }: { analysis: AnalysisView }) {
     <Row>
       <Cell head>
         <Link href={`/analyses/${analysis.id}`}>{analysis.recordingName}</Link>
-        <span className="block text-small text-ink-3">{analysis.recipeName ?? 'own settings'}</span>
+        <span className="block text-small text-ink-3">{analysis.recipeName ?? 'unnamed recipe'}</span>
         {error ? <span className="block text-small text-red-text">{error.detail}</span> : null}
       </Cell>
       <Cell>

@@ -22,7 +22,7 @@ export function ProvenanceSection({ analysis, sha256 }: ProvenanceProps) {
     <Section title="Where it comes from">
       <Facts
         items={[
-          { name: 'Recipe', value: analysis.recipeName ?? 'own settings' },
+          { name: 'Recipe', value: analysis.recipeName ?? 'unnamed recipe' },
           {
             name: 'Stack',
             value: (

@@ -39,7 +39,7 @@ export default async function AnalysisPage({ params }: Props) {
   const conditions = analysis.conditions as Partial<Conditions>;
   const viewed = viewedRecording(recording, conditions.frameInterval_s ?? null);
   const makers = [analysis.createdBy?.id ?? null, run.createdBy?.id ?? null];
-  const name = analysis.recipeName ?? 'own settings';
+  const name = analysis.recipeName ?? 'unnamed recipe';
   return (
     <>
       <PathThread
