@@ -2,7 +2,7 @@ import { measureElongation, type Elongation } from './elongation';
 import { FitWindow } from './fit-window';
 import { JOINT_SPOTS_MOST } from './fit-work';
 import { JointFit } from './joint-fit';
-import { createSecondLook, SHAPE_ERROR } from './second-look';
+import { createSecondLook, DARK_VARIANCE_E2, SHAPE_ERROR } from './second-look';
 import { createSpotKernel } from './spot-kernel';
 import type { SpotPainter } from './spot-painter';
 import type { SpotTable } from './spot-table';
@@ -32,7 +32,6 @@ const ELONGATION_TRIED = 8;
 const RESPONSE_TRIED = 3;
 /** Two spots closer than this many spot sizes can't be told from one with a slightly wrong shape. */
 const CLOSEST_SIGMAS = 0.9;
-
 /** Fits groups of neighbouring spots together and asks whether there are more. */
 export interface GroupFitter {
   /**
@@ -91,7 +90,7 @@ export function createGroupFitter(options: GroupFitterOptions, painter: SpotPain
   const responseTo = (xPx: number, yPx: number, brightnessE: number, { bare }: FramePictures) => {
     const x = Math.max(0, Math.min(width - 1, Math.round(xPx)));
     const y = Math.max(0, Math.min(height - 1, Math.round(yPx)));
-    return (brightnessE * squares) / Math.sqrt(bare[y * width + x] + readVariance);
+    return (brightnessE * squares) / Math.sqrt(bare[y * width + x] + readVariance + DARK_VARIANCE_E2);
   };
 
   const start = (table: SpotTable, members: Int32Array, count: number) => {

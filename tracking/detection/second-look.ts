@@ -3,6 +3,8 @@ import type { FitWindow } from './fit-window';
 
 /** Relative error of the assumed spot shape that the residual of a bright spot must not be taken for a spot. */
 export const SHAPE_ERROR = 0.08;
+/** Least variance of a pixel without light and read noise: a response to nothing but light is finite too. */
+export const DARK_VARIANCE_E2 = 1e-3;
 
 /** Where, in what is left after the fitted spots are taken away, another spot stands out the most. */
 export interface ResidualPeak {
@@ -40,7 +42,8 @@ export function createSecondLook(spotSigmaPx: number, readVariance: number): Sec
       for (let x = 0; x < width; x++, at++, k++) {
         const expected = model[at] + readVariance;
         const doubt = SHAPE_ERROR * (model[at] - bare[at]);
-        noise[k] = used[k] === 1 ? (data[k] - expected) / Math.sqrt(expected + doubt * doubt) : 0;
+        const variance = Math.max(DARK_VARIANCE_E2, expected + doubt * doubt);
+        noise[k] = used[k] === 1 ? (data[k] - expected) / Math.sqrt(variance) : 0;
       }
     }
     for (let y = 0; y < height; y++) {

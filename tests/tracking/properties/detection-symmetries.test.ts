@@ -5,7 +5,7 @@ import { clearSpots, detectIn, evenModel, rearranged, spottedFrame, type PlainSp
 
 // The frame in another pose shows the same spots in that pose. What differs is the order of sums in single
 // precision and, where a fit stops, less than its last step: a hundredth of a standard error.
-const SAME = { errors: 0.01, rel: 1e-3 };
+const SAME = { errors: 0.01, rel: 5e-3 };
 // The light level is measured from what is in view, and with it the background moves a little.
 const ANOTHER_VIEW = { errors: 0.1, rel: 0.01 };
 
