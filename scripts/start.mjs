@@ -23,6 +23,9 @@ const HEALTHY_WITHIN_MS = 120_000;
 const NO_DEMO_HINT =
   'No demo laboratory: `npm run lab -- --name NAME --email ADDRESS` makes a laboratory and prints an invitation link.';
 
+const NO_WORKERS_HINT =
+  'No workers here: recordings and analyses wait until `npm run worker` runs, here or on another machine.';
+
 const say = sayOn(process.stdout);
 
 async function start() {
@@ -112,11 +115,11 @@ async function bringUp(settings, supervisor, isStopping) {
     const children = superviseWebAndWorkers(supervisor, { port, workers, env });
     const explain = () =>
       children.map(({ name, log }) => `--- ${log.path} (${name})\n${log.tail(10)}`).join('\n');
-    // Without workers of its own a start can't wait for those of another machine.
-    const good = workers === 0 ? [200, 503] : [200];
-    await waitForHealth(url, { within_ms: HEALTHY_WITHIN_MS, good, isStopping, explain });
+    const withWorkers = workers > 0;
+    await waitForHealth(url, { within_ms: HEALTHY_WITHIN_MS, withWorkers, isStopping, explain });
   });
   if (isStopping()) return;
+  if (workers === 0) say.line(NO_WORKERS_HINT);
   say.line(`Logs: ${join(data, 'logs')}`);
   say.line(howToSignIn);
   say.line(`Beadline is ready at ${url}`);
