@@ -57,7 +57,7 @@ export function AuditTable({ ofEverybody }: { ofEverybody: boolean }) {
               <thead>
                 <tr>
                   <HeadCell sort={list.sort('createdAt')}>When</HeadCell>
-                  <HeadCell>Who</HeadCell>
+                  <HeadCell narrow="hide">Who</HeadCell>
                   <HeadCell>What</HeadCell>
                 </tr>
               </thead>
@@ -66,11 +66,14 @@ export function AuditTable({ ofEverybody }: { ofEverybody: boolean }) {
                   <Row key={entry.id}>
                     <Cell quiet>
                       <Moment at={entry.createdAt} />
+                      <span className="block text-ink hand:hidden">{whoOf(entry)}</span>
                     </Cell>
-                    <Cell head>{entry.person?.name ?? 'nobody signed in'}</Cell>
+                    <Cell narrow="hide">{whoOf(entry)}</Cell>
                     <Cell>
                       {AUDIT_WORDS[entry.action] ?? entry.action}
-                      {entry.subject.name ? <strong> {entry.subject.name}</strong> : null}
+                      {entry.subject.name ? (
+                        <strong className="[overflow-wrap:anywhere]"> {entry.subject.name}</strong>
+                      ) : null}
                       <RolesThen detail={entry.detail} />
                     </Cell>
                   </Row>
@@ -84,6 +87,8 @@ export function AuditTable({ ofEverybody }: { ofEverybody: boolean }) {
     </>
   );
 }
+
+const whoOf = ({ person }: AuditView) => person?.name ?? 'nobody signed in';
 
 /** Roles that an act gave, and those before it. */
 function RolesThen({ detail }: { detail: Record<string, unknown> }) {

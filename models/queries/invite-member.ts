@@ -16,6 +16,7 @@ export interface OpenInvitation {
 
 interface Account {
   id: string;
+  name: string;
   has_password: boolean;
   disabled: boolean;
   /** Member of this laboratory, of any other. */
@@ -54,7 +55,10 @@ export async function addMember(
     const opens = !account.has_password && !account.elsewhere;
     if (opens) await openInvitation(account.id, invitation, transaction);
     const what = { action: 'member.invited', subjectKind: 'membership', subjectId: id };
-    await writeAudit({ labId, userId: byUserId, ...what, detail: { email, roles } }, transaction);
+    await writeAudit(
+      { labId, userId: byUserId, ...what, detail: { name: account.name, email, roles } },
+      transaction,
+    );
     return opens;
   });
   return { member: await getMember(labId, id), invited };
@@ -81,14 +85,17 @@ export async function renewInvitation(
     }
     await openInvitation(account.id, invitation, transaction);
     const what = { action: 'member.invited-again', subjectKind: 'membership', subjectId: memberId };
-    await writeAudit({ labId, userId: byUserId, ...what, detail: { email: person.email } }, transaction);
+    await writeAudit(
+      { labId, userId: byUserId, ...what, detail: { name: person.name, email: person.email } },
+      transaction,
+    );
   });
 }
 
 /** @param bind the laboratory's id, then what `where` asks for */
 function lockAccount(where: string, bind: [string, string], transaction: Transaction) {
   return selectRow<Account>(
-    `SELECT u.id, u.password_hash IS NOT NULL AS has_password, u.disabled_at IS NOT NULL AS disabled,
+    `SELECT u.id, u.name, u.password_hash IS NOT NULL AS has_password, u.disabled_at IS NOT NULL AS disabled,
        EXISTS (SELECT FROM memberships m WHERE m.user_id = u.id AND m.lab_id = $1) AS here,
        EXISTS (SELECT FROM memberships m WHERE m.user_id = u.id AND m.lab_id <> $1) AS elsewhere
      FROM users u WHERE ${where} FOR UPDATE OF u`,

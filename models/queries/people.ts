@@ -91,7 +91,7 @@ export async function changeRoles(change: Change, roles: Role[], byUserId: strin
         action: 'member.roles-changed',
         subjectKind: 'membership',
         subjectId: change.id,
-        detail: { before: member.roles, after: roles },
+        detail: { name: member.person.name, before: member.roles, after: roles },
       },
       transaction,
     );

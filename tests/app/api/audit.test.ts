@@ -50,13 +50,13 @@ describe('the audit trail', () => {
       const { items } = await read(lab.people[role]);
       expect(items.map(({ action, person, subject }) => [action, person?.name, subject.name])).toEqual([
         ['member.removed', lab.people.lab_administrator.name, 'Ada Reed'],
-        ['member.roles-changed', lab.people.lab_administrator.name, null],
-        ['member.invited', lab.people.lab_administrator.name, 'ada@lab.test'],
+        ['member.roles-changed', lab.people.lab_administrator.name, 'Ada Reed'],
+        ['member.invited', lab.people.lab_administrator.name, 'Ada Reed'],
         ['token.made', lab.people.analyst.name, 'Notebook'],
         ['campaign.restored', lab.people.experimentalist.name, 'Quiet pipe'],
         ['campaign.removed', lab.people.experimentalist.name, 'Quiet pipe'],
       ]);
-      expect(items[1].detail).toEqual({ before: ['annotator'], after: ['analyst'] });
+      expect(items[1].detail).toEqual({ name: 'Ada Reed', before: ['annotator'], after: ['analyst'] });
     }
   });
 
