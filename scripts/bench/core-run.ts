@@ -10,6 +10,7 @@ import { POINT_BRIDGED, type Frame, type Recipe, type Tracks } from '@/tracking/
 import type { PipelineRun } from './pipeline-run';
 
 const MICRO = 1e-6;
+const LINKINGS_COLD = 4;
 
 /** CPU time of a piece of work in this process, s: other programs on the machine don't count. */
 async function cpuSeconds(work: () => void | Promise<void>): Promise<number> {
@@ -52,6 +53,8 @@ export async function runCore(stack: StackReader, effort: Recipe['effort']): Pro
   });
   const detection = Math.max(0, throughReading - reading);
   const spots = sink.spots();
+  // One call links the whole recording, so it takes a few until the compiler is done with it.
+  for (let i = 0; i < LINKINGS_COLD; i++) linkSpots(spots, { frames, width, height }, recipe);
   let tracks: Tracks | null = null;
   const linking = await cpuSeconds(() => {
     tracks = linkSpots(spots, { frames, width, height }, recipe);
