@@ -1,5 +1,5 @@
 import { type StackNote, StackRefusal } from './refusal';
-import { compareNaturally } from './natural-order';
+import { compareNaturally } from '@/lib/natural-order';
 import { ranges } from './sentence';
 import { namedAsFrame } from './sniff';
 

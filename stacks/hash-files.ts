@@ -1,7 +1,7 @@
 import { createHash } from 'node:crypto';
 import { createReadStream } from 'node:fs';
 import { type StackSource } from './stack-report';
-import { compareNaturally } from './natural-order';
+import { compareNaturally } from '@/lib/natural-order';
 
 const CHUNK_BYTES = 1024 * 1024;
 

@@ -1,3 +1,5 @@
+import { compareNaturally } from '../natural-order';
+
 /** A file of a chosen folder, with its path below it. */
 export interface FolderEntry<F> {
   path: string;
@@ -27,24 +29,3 @@ export function folderNameOf(paths: readonly string[]): string {
 }
 
 const isHidden = (path: string) => path.split('/').some((part) => part.startsWith('.'));
-
-const PARTS = /\d+|\D+/g;
-
-/** Order of names by the numbers in them; a total order, the same on each machine. */
-function compareNaturally(a: string, b: string): number {
-  const left = a.toLowerCase().match(PARTS) ?? [];
-  const right = b.toLowerCase().match(PARTS) ?? [];
-  for (let i = 0; i < Math.min(left.length, right.length); i += 1) {
-    const order = compareParts(left[i], right[i]);
-    if (order !== 0) return order;
-  }
-  return left.length - right.length || compareText(a, b);
-}
-
-function compareParts(a: string, b: string): number {
-  if (!/^\d/.test(a) || !/^\d/.test(b)) return compareText(a, b);
-  const [x, y] = [a.replace(/^0+(?=\d)/, ''), b.replace(/^0+(?=\d)/, '')];
-  return x.length - y.length || compareText(x, y);
-}
-
-const compareText = (a: string, b: string) => (a < b ? -1 : a > b ? 1 : 0);

@@ -1,6 +1,6 @@
 import { createHash } from 'node:crypto';
 import { describe, expect, it } from 'vitest';
-import { compareNaturally } from '@/stacks/natural-order';
+import { compareNaturally } from '@/lib/natural-order';
 import { frameGaps } from '@/stacks/frame-files';
 import { inspectBytes, readBytes, refuseBytes } from '../helpers/stack-writers/stack-folder';
 import { testPages } from '../helpers/stack-writers/test-pattern';
