@@ -1,3 +1,4 @@
+import type { ReactNode } from 'react';
 import { SelectField } from '@/components/ui/choice';
 import { Field, FieldGroup } from '@/components/ui/field';
 import { DRIVE_NAMES } from '@/lib/run-form/drive-names';
@@ -32,6 +33,15 @@ const SPECIES = [
   'solid air',
 ];
 
+/** Where the laboratory's own gamma and v_0 stand. */
+const gammaHelp = (
+  <>
+    in √<i>L</i> = <i>γ</i> (<i>v</i>
+    <sub>ns</sub> − <i>v</i>
+    <sub>0</sub>)
+  </>
+);
+
 export interface ConditionsFieldsProps {
   form: RunForm;
   change: (part: Partial<RunForm>) => void;
@@ -46,7 +56,7 @@ export interface ConditionsFieldsProps {
 /** Every condition of a run in four groups. */
 export function ConditionsFields(props: ConditionsFieldsProps) {
   const { form, change, onText, onUnit, onLeave, errorOf, warningOf, disabled } = props;
-  const number = (field: ConditionName, label: string, help?: string) => (
+  const number = (field: ConditionName, label: string, help?: ReactNode) => (
     <QuantityField
       field={field}
       label={label}
@@ -162,7 +172,7 @@ export function ConditionsFields(props: ConditionsFieldsProps) {
         {number('pixelSize_m', 'Pixel size')}
       </FieldGroup>
       <FieldGroup legend="Expectation" note="where your laboratory knows its own">
-        {number('gamma_s_m2', 'Own γ', 'in √L = γ (v_ns − v₀)')}
+        {number('gamma_s_m2', 'Own γ', gammaHelp)}
         {number('v0_m_s', 'Own v₀')}
       </FieldGroup>
     </>

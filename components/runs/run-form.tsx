@@ -32,6 +32,8 @@ interface RunFormProps {
   notes: string;
   tags: readonly string[];
   conditions: RunConditionsInput;
+  /** Conditions that a file proposes where the run has none, and the file's name. */
+  proposal?: { from: string; conditions: Partial<RunConditionsInput> } | null;
   revision: number | null;
   save: (run: RunCreate, revision: number | null) => Promise<SaveRunResult>;
   /** Called with the place to go once a new run exists. */
@@ -44,7 +46,9 @@ interface RunFormProps {
 export function RunForm(props: RunFormProps) {
   const notify = useNotice();
   const router = useRouter();
-  const [form, setForm] = useState<Typed>(() => runForm(props.conditions));
+  const [form, setForm] = useState<Typed>(() =>
+    runForm({ ...props.conditions, ...props.proposal?.conditions }),
+  );
   const [name, setName] = useState(props.name);
   const [notes, setNotes] = useState(props.notes);
   const [tags, setTags] = useState(props.tags.join(', '));
@@ -109,6 +113,7 @@ export function RunForm(props: RunFormProps) {
       }
       setRevision(result.revision);
       notify('Conditions saved.');
+      router.refresh();
     } catch {
       setFromServer({ detail: 'The link to the server was lost. Nothing was saved; try again.', errors: [] });
     } finally {
@@ -169,6 +174,15 @@ export function RunForm(props: RunFormProps) {
               }
             />
           ))}
+          {props.proposal && !readOnly ? (
+            <p className="pt-3 text-note text-amber-text">
+              Taken from {props.proposal.from}, not saved yet:{' '}
+              {Object.keys(props.proposal.conditions)
+                .map((field) => fieldName(field as ConditionName).toLowerCase())
+                .join(' and ')}
+              . Check and save.
+            </p>
+          ) : null}
           {fromServer ? (
             <div className="pt-3">
               <ErrorState live what={fromServer.detail} />

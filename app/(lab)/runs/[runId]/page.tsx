@@ -4,6 +4,7 @@ import { RunForm } from '@/components/runs/run-form';
 import { PathThread } from '@/components/ui/path-thread';
 import { whoMay } from '@/lib/access';
 import { conditionsOfView } from '@/lib/run-form/conditions-of-view';
+import { runProposal } from '@/models/queries/run-proposal';
 import { pathLevels } from '../../path-levels';
 import { editRun } from '../actions';
 import { loadRun } from './load-run';
@@ -20,6 +21,11 @@ export async function generateMetadata({ params }: Props): Promise<Metadata> {
 export default async function RunPage({ params }: Props) {
   const loaded = await loadRun((await params).runId);
   const { viewer, run, campaign } = loaded;
+  const conditions = conditionsOfView(run);
+  const proposed = await runProposal(viewer.labId, run.id);
+  const open = (['pixelSize_m', 'frameInterval_s'] as const).flatMap((field) =>
+    proposed?.[field] && conditions[field] === null ? [[field, proposed[field]] as const] : [],
+  );
   const mine = mayTo(viewer, 'edit-run', [run.createdBy?.id ?? null]);
   return (
     <>
@@ -30,7 +36,10 @@ export default async function RunPage({ params }: Props) {
         name={run.name}
         notes={run.notes ?? ''}
         tags={run.tags}
-        conditions={conditionsOfView(run)}
+        conditions={conditions}
+        proposal={
+          proposed && open.length > 0 ? { from: proposed.from, conditions: Object.fromEntries(open) } : null
+        }
         revision={run.revision}
         save={editRun.bind(null, run.id)}
         submitLabel="Save conditions"
