@@ -1,7 +1,7 @@
 'use client';
 
 import Link from 'next/link';
-import type { ReactNode } from 'react';
+import type { ComponentProps, ReactNode } from 'react';
 import { Answer } from '@/components/data/answer';
 import { useList } from '@/components/lists/use-list';
 import { Moment } from '@/components/ui/moment';
@@ -43,19 +43,7 @@ export function AnalysisTable({ source, empty, action }: AnalysisTableProps) {
             <EmptyState action={action}>{empty}</EmptyState>
           ) : (
             <Table label="Analyses">
-              <thead>
-                <tr>
-                  <HeadCell>Recording and recipe</HeadCell>
-                  <HeadCell>State</HeadCell>
-                  <HeadCell narrow="hide">Image · spots · tracks · flow</HeadCell>
-                  <HeadCell numeric narrow="hide">
-                    Tracks
-                  </HeadCell>
-                  <HeadCell narrow="hide" sort={list.sort('createdAt')}>
-                    Started
-                  </HeadCell>
-                </tr>
-              </thead>
+              <AnalysisHead sort={list.sort('createdAt')} />
               <tbody>
                 {items.map((analysis) => (
                   <AnalysisRow key={analysis.id} analysis={analysis} />
@@ -67,6 +55,25 @@ export function AnalysisTable({ source, empty, action }: AnalysisTableProps) {
       </Answer>
       <Pager label="analyses" backHref={list.backHref} nextHref={list.nextHref} />
     </>
+  );
+}
+
+/** Heads over rows of analyses; `sort` makes the last one a link. */
+export function AnalysisHead({ sort }: { sort?: ComponentProps<typeof HeadCell>['sort'] }) {
+  return (
+    <thead>
+      <tr>
+        <HeadCell>Recording and recipe</HeadCell>
+        <HeadCell>State</HeadCell>
+        <HeadCell narrow="hide">Image · spots · tracks · flow</HeadCell>
+        <HeadCell numeric narrow="hide">
+          Tracks
+        </HeadCell>
+        <HeadCell narrow="hide" sort={sort}>
+          Started
+        </HeadCell>
+      </tr>
+    </thead>
   );
 }
 

@@ -1,11 +1,11 @@
 'use client';
 
 import { useQuery } from '@tanstack/react-query';
-import { AnalysisRow } from '@/components/analyses/analysis-table';
+import { AnalysisHead, AnalysisRow } from '@/components/analyses/analysis-table';
 import { api } from '@/components/data/api-client';
 import { Answer } from '@/components/data/answer';
 import { EmptyState } from '@/components/ui/page-states';
-import { HeadCell, Table } from '@/components/ui/table';
+import { Table } from '@/components/ui/table';
 import type { AnalysisView } from '@/lib/views/analysis-view';
 import type { ListView } from '@/lib/views/common';
 
@@ -35,17 +35,7 @@ export function WorkList() {
           <EmptyState>No analysis is at work and none has failed.</EmptyState>
         ) : (
           <Table label="Analyses at work">
-            <thead>
-              <tr>
-                <HeadCell>Recording and recipe</HeadCell>
-                <HeadCell>State</HeadCell>
-                <HeadCell narrow="hide">Image · spots · tracks · flow</HeadCell>
-                <HeadCell numeric narrow="hide">
-                  Tracks
-                </HeadCell>
-                <HeadCell narrow="hide">Started</HeadCell>
-              </tr>
-            </thead>
+            <AnalysisHead />
             <tbody>
               {analyses.map((analysis) => (
                 <AnalysisRow key={analysis.id} analysis={analysis} />
