@@ -15,6 +15,7 @@ export default defineConfig({
           name: 'parts',
           include: ['tests/**/*.test.ts', 'tests/**/*.test.tsx'],
           exclude: needsServer,
+          globalSetup: ['tests/helpers/compile-kernels.ts'],
           maxWorkers: 2,
           sequence: { groupOrder: 0 },
         },

@@ -1,5 +1,6 @@
 import { existsSync, mkdirSync, readFileSync, readdirSync, renameSync, writeFileSync } from 'node:fs';
 import { basename, join } from 'node:path';
+import { ensureKernels } from './kernels.mjs';
 import { withLock } from './lock.mjs';
 import { inRoot, ROOT } from './paths.mjs';
 import { PlainStop } from './plain-stop.mjs';
@@ -16,7 +17,12 @@ const SOURCES = [
   'jobs',
   'auth',
   'migrations',
-].concat(['package-lock.json', 'tsconfig.json', 'scripts/platform/bundles.mjs']);
+].concat([
+  'package-lock.json',
+  'tsconfig.json',
+  'scripts/platform/bundles.mjs',
+  'scripts/platform/kernels.mjs',
+]);
 
 /** Processes that compute are started by their path, so no import shows that these entries need them. */
 const COMPUTING = new Set(['worker', 'analyse', 'bench', 'validate']);
@@ -45,6 +51,7 @@ export const codeVersion = () => {
  */
 export async function ensureBundles({ names = entryNames(), say }) {
   const computes = names.some((name) => COMPUTING.has(name));
+  if (computes) await ensureKernels(say);
   const wanted = [...new Set([...names, ...(computes ? [COMPUTE_CHILD] : [])])];
   const hash = hashSources(ROOT, SOURCES);
   if (isCurrent(wanted, hash)) return;
