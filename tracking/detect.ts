@@ -1,10 +1,11 @@
-import { createGroupFitter, type FramePictures } from './detection/group-fitter';
+import { createGroupFitter } from './detection/group-fitter';
 import { JOINT_SPOTS_MOST } from './detection/fit-work';
 import { measureLightLevel } from './detection/light-level';
-import { createMatchedFilter, findPeaks, type PeakList } from './detection/matched-filter';
 import { createSpotPainter } from './detection/spot-painter';
 import { SpotTable } from './detection/spot-table';
 import { levelForFalseMaxima } from './detection/threshold';
+import type { Kernels } from './kernels/kernels';
+import { plainKernels } from './kernels/plain-kernels';
 import type { SpotSink } from './spots';
 import {
   SPOT_EDGE,
@@ -33,8 +34,6 @@ const SECOND_LOOK_SHARE = 0.1;
 /** How far the background near a spot may differ from the model: a share of it and a floor, electrons. */
 const OFFSET_SHARE = 0.1;
 const OFFSET_LEAST_E = 0.5;
-/** Pixels in a row that are given the same noise of the background. */
-const NOISE_PIXELS = 4;
 /** Score of elongation that marks a spot: noise exceeds it once in 10^5. */
 const ELONGATION_FLAGGED = 23;
 
@@ -50,9 +49,10 @@ export interface Detector {
  * maximum likelihood, neighbours together; in what remains a second look asks whether one more
  * spot gains enough likelihood. Standard errors come from the Fisher information of the joint fit.
  *
+ * @param kernels what works on all pixels: plain or compiled
  * @throws RangeError when a frame has another size than the model.
  */
-export function createDetector(model: ImageModel, recipe: Recipe): Detector {
+export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kernels = plainKernels): Detector {
   const { width, height, badPixels, backgroundE, offsetCounts, saturationCounts } = model;
   const pixels = width * height;
   const sigma = recipe.spotSizePx;
@@ -61,58 +61,34 @@ export function createDetector(model: ImageModel, recipe: Recipe): Detector {
   const level = levelForFalseMaxima(recipe.falseSpotsPerFrame, sigma, pixels);
   const lookTwice = recipe.effort === 'full';
 
-  const filter = createMatchedFilter(width, height, sigma);
+  const pictures = kernels.forImages({ width, height, spotSigmaPx: sigma });
+  pictures.bad.set(badPixels);
+  pictures.background.set(backgroundE);
+  const { response } = pictures;
+  const countScale = { offsetCounts, perCount: 1 / recipe.gain, saturationCounts };
   const painter = createSpotPainter(width, height, sigma, reach);
   const fitter = createGroupFitter({ width, height, spotSigmaPx: sigma, readVariance, reach }, painter);
   const table = new SpotTable();
-  const peaks: PeakList = { count: 0, at: new Int32Array(1024) };
-  const noise = new Float32Array(pixels);
-  const response = new Float32Array(pixels);
-  const pictures: FramePictures = {
-    electrons: new Float32Array(pixels),
-    usable: new Uint8Array(pixels),
-    bare: new Float32Array(pixels),
-    model: new Float32Array(pixels),
-  };
   const near = new Int32Array(64);
   const members = new Int32Array(JOINT_SPOTS_MOST);
   let order = new Int32Array(0);
 
   /** Electrons, what can be used of them, and the frame in units of its noise. */
   const prepare = ({ counts }: Frame) => {
-    const { electrons, usable, bare } = pictures;
-    const perCount = 1 / recipe.gain;
-    for (let i = 0; i < pixels; i++) {
-      const e = (counts[i] - offsetCounts) * perCount;
-      const good = badPixels[i] === 0 && e - e === 0;
-      electrons[i] = good ? e : 0;
-      usable[i] = good ? 1 : 0;
-    }
-    const { scale, shift } = measureLightLevel(electrons, backgroundE, usable, readVariance);
-    let perNoise = 0;
-    for (let i = 0; i < pixels; i++) {
-      const background = Math.max(0, scale * backgroundE[i] + shift);
-      bare[i] = background;
-      // The background changes so slowly that its noise is worked out for a few pixels at once.
-      if (i % NOISE_PIXELS === 0) perNoise = 1 / Math.sqrt(background + readVariance + 1e-3);
-      noise[i] = usable[i] === 0 ? 0 : (electrons[i] - background) * perNoise;
-    }
-    // A saturated pixel shows that there is light, but not how much.
-    if (saturationCounts < Infinity) {
-      for (let i = 0; i < pixels; i++) if (counts[i] >= saturationCounts) usable[i] = 0;
-    }
-    pictures.model.set(bare);
+    pictures.toElectrons(counts, countScale);
+    const { electrons, background, usable } = pictures;
+    pictures.respond(measureLightLevel(electrons, background, usable, readVariance), readVariance);
   };
 
   const propose = () => {
-    filter.apply(noise, response);
-    findPeaks(response, width, height, level - LEVEL_MARGIN, peaks);
+    const peaks = pictures.findPeaks(level - LEVEL_MARGIN);
     table.count = 0;
     for (let k = 0; k < peaks.count; k++) {
       const at = peaks.at[k];
       const x = at % width;
       const y = (at - x) / width;
-      const brightness = (response[at] * Math.sqrt(pictures.bare[at] + readVariance)) / filter.kernel.squares;
+      const noise = Math.sqrt(pictures.bare[at] + readVariance);
+      const brightness = (response[at] * noise) / pictures.kernel.squares;
       table.add(x + subPixel(at, 1, x, width), y + subPixel(at, width, y, height), brightness, response[at]);
     }
     for (let i = 0; i < table.count; i++) painter.paint(pictures.model, table.x[i], table.y[i], table.n[i]);

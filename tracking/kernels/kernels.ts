@@ -1,0 +1,89 @@
+import type { SpotKernel } from '../detection/spot-kernel';
+import type { SimdExports } from './simd-exports';
+
+/**
+ * What detection does with every pixel of a frame. Two sets compute the same: plain TypeScript, which runs
+ * everywhere and is the oracle, and WebAssembly with vectors of four numbers, which is several times as fast.
+ */
+export interface Kernels {
+  readonly name: 'plain' | 'simd';
+  /** Memory and operations for frames of one size; worth keeping from frame to frame. */
+  forImages(spec: ImageSpec): FrameKernels;
+}
+
+export interface ImageSpec {
+  width: number;
+  height: number;
+  spotSigmaPx: number;
+  /** Bytes that the caller wants in the same memory as the planes, for kernels of its own. */
+  scratchBytes?: number;
+}
+
+/** Counts of a frame in photoelectrons: (counts - offset) * perCount. */
+export interface CountScale {
+  offsetCounts: number;
+  /** Photoelectrons per count. */
+  perCount: number;
+  /** Count at which the camera saturates, or Infinity. */
+  saturationCounts: number;
+}
+
+/** Places in an image, by y, then x. */
+export interface Peaks {
+  count: number;
+  /** Entries 0 .. count - 1 are valid, until the next search. */
+  at: Int32Array;
+}
+
+/**
+ * The frame at hand, plane by plane: entry y * width + x belongs to pixel (x, y). The arrays stay the same
+ * from frame to frame.
+ */
+export interface FramePlanes {
+  /** Filled by the caller, before the first frame: 1 where a pixel can't be trusted. */
+  readonly bad: Uint8Array;
+  /** Filled by the caller, for all frames or for each: light without spots of the whole stack, electrons. */
+  readonly background: Float32Array;
+  readonly electrons: Float32Array;
+  /** 1 where a pixel counts; 0 where it is bad, holds no number or is saturated. */
+  readonly usable: Uint8Array;
+  /** Expected light without spots, electrons >= 0. */
+  readonly bare: Float32Array;
+  /** Starts as `bare`; whoever knows of spots adds their light. */
+  readonly model: Float32Array;
+  /** Noise of variance 1 in which a spot stands out the most. */
+  readonly response: Float32Array;
+}
+
+/** Operations on frames of one size. Each frame goes through them in this order. */
+export interface FrameKernels extends FramePlanes {
+  readonly width: number;
+  readonly height: number;
+  readonly kernel: SpotKernel;
+  /** Where compiled kernels find the planes; null when there are none and the plain ones do the work. */
+  readonly compiled: CompiledPlanes | null;
+  /** Fills `electrons` and `usable`. Pixels that are bad or hold no finite number get 0 electrons. */
+  toElectrons(counts: Float32Array, scale: CountScale): void;
+  /**
+   * Fills `bare`, max(0, scale * background + shift), and `model`; then `response`, the frame in units of
+   * its own noise correlated with the spot. Bad pixels count as dark, saturated ones as bright as they look.
+   */
+  respond(light: { scale: number; shift: number }, readVariance: number): void;
+  /**
+   * Pixels of `response` from `level` on that none of their eight neighbours exceeds; of equal neighbours
+   * the first in reading order counts.
+   */
+  findPeaks(level: number): Peaks;
+}
+
+/** Byte addresses in the memory of an instance of the compiled kernels. */
+export interface CompiledPlanes {
+  readonly exports: SimdExports;
+  readonly electronsAt: number;
+  readonly usableAt: number;
+  readonly bareAt: number;
+  readonly modelAt: number;
+  readonly responseAt: number;
+  /** `scratchBytes` of the spec, on a multiple of 16. */
+  readonly scratchAt: number;
+}

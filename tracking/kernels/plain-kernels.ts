@@ -1,0 +1,68 @@
+import { createMatchedFilter, findPeaks } from '../detection/matched-filter';
+import { DARK_VARIANCE_E2 } from '../detection/second-look';
+import type { FrameKernels, ImageSpec, Kernels, Peaks } from './kernels';
+import { saturationElectrons } from './noise-units';
+
+/** The kernels in plain TypeScript: oracle of the compiled ones, and what computes where those can't run. */
+export const plainKernels: Kernels = { name: 'plain', forImages };
+
+function forImages({ width, height, spotSigmaPx }: ImageSpec): FrameKernels {
+  const pixels = width * height;
+  const bad = new Uint8Array(pixels);
+  const background = new Float32Array(pixels);
+  const electrons = new Float32Array(pixels);
+  const usable = new Uint8Array(pixels);
+  const bare = new Float32Array(pixels);
+  const model = new Float32Array(pixels);
+  const noise = new Float32Array(pixels);
+  const response = new Float32Array(pixels);
+  const filter = createMatchedFilter(width, height, spotSigmaPx);
+  const peaks: Peaks = { count: 0, at: new Int32Array(1024) };
+  let saturationE = Infinity;
+
+  const toElectrons: FrameKernels['toElectrons'] = (counts, scale) => {
+    const { offsetCounts, perCount } = scale;
+    saturationE = saturationElectrons(scale);
+    for (let i = 0; i < pixels; i++) {
+      const e = (counts[i] - offsetCounts) * perCount;
+      const good = bad[i] === 0 && e - e === 0;
+      electrons[i] = good ? e : 0;
+      // A saturated pixel shows that there is light, but not how much.
+      usable[i] = good && electrons[i] < saturationE ? 1 : 0;
+    }
+  };
+
+  const respond: FrameKernels['respond'] = ({ scale, shift }, readVariance) => {
+    const floor = readVariance + DARK_VARIANCE_E2;
+    for (let i = 0; i < pixels; i++) {
+      const light = Math.max(0, scale * background[i] + shift);
+      bare[i] = light;
+      const seen = usable[i] === 1 || electrons[i] >= saturationE;
+      noise[i] = seen ? (electrons[i] - light) / Math.sqrt(light + floor) : 0;
+    }
+    model.set(bare);
+    filter.apply(noise, response);
+  };
+
+  const find = (level: number): Peaks => {
+    findPeaks(response, width, height, level, peaks);
+    return peaks;
+  };
+
+  return {
+    width,
+    height,
+    kernel: filter.kernel,
+    compiled: null,
+    bad,
+    background,
+    electrons,
+    usable,
+    bare,
+    model,
+    response,
+    toElectrons,
+    respond,
+    findPeaks: find,
+  };
+}
