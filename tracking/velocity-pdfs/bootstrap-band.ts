@@ -1,26 +1,13 @@
-import type { Random } from '../random';
 import { sortedQuantile } from '../quantile';
-
-/** Tracks are resampled in this many random packs at most: its own error is then 7 % of the band. */
-export const PACKS_MAX = 100;
 
 /** Zero of n samples still allows 3/n at 95 % (rule of three). */
 const RULE_OF_THREE = 3;
-
-/** Multiplicities of packs in every draw, draws rows of packs. */
-export function bootstrapWeights(random: Random, packs: number, draws: number): Uint16Array {
-  const weights = new Uint16Array(packs * draws);
-  for (let d = 0; d < draws; d++) {
-    for (let i = 0; i < packs; i++) weights[d * packs + random.integer(packs)]++;
-  }
-  return weights;
-}
 
 /**
  * Pointwise 95 % band of the density in bins, from drawing packs of whole tracks with replacement.
  *
  * @param counts packs rows of bins: samples of a pack in a bin.
- * @param weights multiplicities of `bootstrapWeights` for as many packs.
+ * @param weights multiplicities of `packTracks` for as many packs.
  * @returns null where fewer than 2 packs hold samples.
  */
 export function bootstrapBand(

@@ -1,8 +1,8 @@
-import { createRandom, mixSeed, type Random } from '../random';
+import { createRandom, mixSeed } from '../random';
+import { packTracks } from '../resampling/packs';
 import { POPULATIONS, type Conditions, type Recipe, type Tracks } from '../types';
 import type { PdfPopulation, VelocityComponent, VelocityPdf } from '../velocity-pdf-shape';
 import { unitFlow } from '../velocities';
-import { bootstrapWeights, PACKS_MAX } from './bootstrap-band';
 import { componentNoise, componentOf, lagSamples, type LagSamples } from './component-samples';
 import { histogram } from './histogram';
 import { pdfEdges } from './pdf-bins';
@@ -30,9 +30,7 @@ export function velocityPdfs(
     ? ['x', 'y', 'along', 'across', 'speed']
     : ['x', 'y', 'speed'];
   const random = createRandom(mixSeed(recipe.seed, 21));
-  const pack = assignPacks(random, tracks.count);
-  const packs = Math.min(PACKS_MAX, Math.max(1, tracks.count));
-  const weights = bootstrapWeights(random, packs, recipe.bootstrapDraws);
+  const { packs, pack, weights } = packTracks(random, tracks.count, recipe.bootstrapDraws);
   const pdfs: VelocityPdf[] = [];
   recipe.lagsFrames.forEach((lagFrames, place) => {
     onLag(place, recipe.lagsFrames.length);
@@ -61,18 +59,6 @@ export function velocityPdfs(
     }
   });
   return pdfs;
-}
-
-/** Random packs of nearly the same number of tracks. */
-function assignPacks(random: Random, tracks: number): Uint8Array {
-  const order = Uint32Array.from({ length: tracks }, (_, i) => i);
-  for (let i = tracks - 1; i > 0; i--) {
-    const j = random.integer(i + 1);
-    [order[i], order[j]] = [order[j], order[i]];
-  }
-  const pack = new Uint8Array(tracks);
-  order.forEach((track, place) => (pack[track] = place % PACKS_MAX));
-  return pack;
 }
 
 function typicalNoise(
