@@ -1,8 +1,9 @@
-import { matchPoints, nearestNeighbourPx, type TimedPoints } from './assess/point-match';
-import { positionBound } from './cramer-rao';
+import type { TimedPoints } from './assess/frame-order';
+import { measuredTracks, type MeasuredTracks } from './assess/measured-tracks';
+import { matchPoints, nearestNeighbourPx } from './assess/point-match';
+import { lookAtTruth } from './assess/true-spots';
 import type { Scene, SceneCamera } from './simulate/scene';
-import { sheetLight } from './simulate/sheet-light';
-import { POINT_BRIDGED, type Tracks } from './types';
+import type { Tracks } from './types';
 
 /** A found point farther than this from the truth is another thing. */
 export const FOUND_WITHIN_PX = 2;
@@ -36,19 +37,13 @@ export interface FoundPoints extends TimedPoints {
 }
 
 /** Measured points of tracks; bridged ones are interpolated and count for nothing. */
-export function measuredPoints(tracks: Tracks): FoundPoints {
-  const keep = Array.from(tracks.flags.keys()).filter((i) => (tracks.flags[i] & POINT_BRIDGED) === 0);
-  const pick = (from: ArrayLike<number>) => Float64Array.from(keep, (i) => from[i]);
-  const { frame, xPx, yPx, sxPx, syPx } = tracks;
-  return { frame: pick(frame), xPx: pick(xPx), yPx: pick(yPx), sxPx: pick(sxPx), syPx: pick(syPx) };
-}
+export const measuredPoints = (tracks: Tracks): MeasuredTracks => measuredTracks(tracks);
 
 /** Compares points with the scene that they were found in. */
 export function assessPoints(scene: Scene, camera: SceneCamera, found: FoundPoints): PointAssessment {
   const partner = matchPoints(scene, found, scene.frames, FOUND_WITHIN_PX);
   const nearest = nearestNeighbourPx(scene, scene.frames);
-  const light = sheetLight(camera, scene.widthPx, scene.heightPx);
-  const readVariance = camera.readNoiseE * camera.readNoiseE;
+  const truth = lookAtTruth(scene, camera);
   let matched = 0;
   let isolated = 0;
   let isolatedMatched = 0;
@@ -65,17 +60,7 @@ export function assessPoints(scene: Scene, camera: SceneCamera, found: FoundPoin
     matched++;
     if (!alone) continue;
     isolatedMatched++;
-    const x = Math.max(0, Math.min(scene.widthPx - 1, Math.round(scene.xPx[i])));
-    const y = Math.max(0, Math.min(scene.heightPx - 1, Math.round(scene.yPx[i])));
-    const bound = positionBound(
-      scene.brightnessE[i],
-      camera.backgroundE * light[y * scene.widthPx + x],
-      camera.spotSigmaPx,
-      readVariance,
-      scene.xPx[i] - x,
-      scene.yPx[i] - y,
-      { left: -x, right: scene.widthPx - 1 - x, top: -y, bottom: scene.heightPx - 1 - y },
-    );
+    const bound = truth.bound(i);
     const dx = found.xPx[j] - scene.xPx[i];
     const dy = found.yPx[j] - scene.yPx[i];
     errorX += dx * dx;

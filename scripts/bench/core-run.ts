@@ -1,12 +1,12 @@
 import type { StackReader } from '@/stacks/open-stack';
-import { measuredPoints } from '@/tracking/assess';
+import { measuredTracks } from '@/tracking/assess/measured-tracks';
 import { createDetector } from '@/tracking/detect';
 import { createMatchedFilter } from '@/tracking/detection/matched-filter';
 import { linkSpots } from '@/tracking/link';
 import { measureImage, pickModelFrames } from '@/tracking/measure-image';
 import { resolveRecipe } from '@/tracking/recipe';
 import { createSpotSink } from '@/tracking/spots';
-import { POINT_BRIDGED, type Frame, type Recipe, type Tracks } from '@/tracking/types';
+import type { Frame, Recipe, Tracks } from '@/tracking/types';
 import type { PipelineRun } from './pipeline-run';
 
 const MICRO = 1e-6;
@@ -67,16 +67,6 @@ export async function runCore(stack: StackReader, effort: Recipe['effort']): Pro
     spots: spots.count,
     links: made.frame.length - made.count,
     peakMB: Number.NaN,
-    points: { start: measuredStarts(made), ...measuredPoints(made) },
+    points: measuredTracks(made),
   };
-}
-
-/** Where each track starts once its interpolated points are left out. */
-function measuredStarts({ count, start, flags }: Tracks): number[] {
-  const starts = [0];
-  for (let i = 0; i < count; i++) {
-    const measured = flags.subarray(start[i], start[i + 1]).filter((flag) => (flag & POINT_BRIDGED) === 0);
-    starts.push(starts[i] + measured.length);
-  }
-  return starts;
 }

@@ -1,5 +1,6 @@
 import { assessPoints } from '@/tracking/assess';
-import { scoreTracks, type ComparedTracks } from '@/tracking/assess/track-scores';
+import type { ComparedTracks } from '@/tracking/assess/track-overlap';
+import { scoreTracks } from '@/tracking/assess/track-scores';
 import type { BenchRecording } from './recording';
 
 /** CPU seconds of one pass over the recording by one process, warm. */

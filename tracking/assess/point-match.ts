@@ -1,23 +1,8 @@
 import { createAssignmentSolver } from '../assign';
-
-/** Points in time, in any order; entry i of every array is one point. */
-export interface TimedPoints {
-  frame: ArrayLike<number>;
-  xPx: ArrayLike<number>;
-  yPx: ArrayLike<number>;
-}
+import { firstFrom, orderByFrame, type TimedPoints } from './frame-order';
 
 /** Neighbours farther away than this touch nothing. */
 const FAR_PX = 50;
-
-/** Lists of point numbers by frame. */
-export function pointsByFrame(points: TimedPoints, frames: number): number[][] {
-  const lists: number[][] = Array.from({ length: frames }, () => []);
-  for (let i = 0; i < points.frame.length; i++) {
-    if (points.frame[i] < frames) lists[points.frame[i]].push(i);
-  }
-  return lists;
-}
 
 /**
  * Pairs points of two sets frame by frame, one to one, none farther apart than the gate, with as
@@ -32,32 +17,36 @@ export function matchPoints(
   gatePx: number,
 ): Int32Array {
   const partner = new Int32Array(truth.frame.length).fill(-1);
-  const truthByFrame = pointsByFrame(truth, frames);
-  const foundByFrame = pointsByFrame(found, frames);
+  const rowOrder = orderByFrame(truth, frames);
+  const columnOrder = orderByFrame(found, frames);
   const solver = createAssignmentSolver();
   for (let f = 0; f < frames; f++) {
-    const rows = truthByFrame[f];
-    const columns = [...foundByFrame[f]].sort((a, b) => found.xPx[a] - found.xPx[b]);
+    const rows = rowOrder.start[f + 1] - rowOrder.start[f];
+    const firstColumn = columnOrder.start[f];
+    const columns = columnOrder.start[f + 1] - firstColumn;
     const start = [0];
     const column: number[] = [];
     const cost: number[] = [];
-    for (const i of rows) {
-      let j = firstFrom(columns, found.xPx, truth.xPx[i] - gatePx);
-      for (; j < columns.length && found.xPx[columns[j]] <= truth.xPx[i] + gatePx; j++) {
-        const dx = found.xPx[columns[j]] - truth.xPx[i];
-        const dy = found.yPx[columns[j]] - truth.yPx[i];
+    for (let row = 0; row < rows; row++) {
+      const x = rowOrder.xPx[rowOrder.start[f] + row];
+      const y = rowOrder.yPx[rowOrder.start[f] + row];
+      for (let j = firstFrom(columnOrder, f, x - gatePx); j < firstColumn + columns; j++) {
+        const dx = columnOrder.xPx[j] - x;
+        if (dx > gatePx) break;
+        const dy = columnOrder.yPx[j] - y;
         const off = dx * dx + dy * dy - gatePx * gatePx;
         if (off >= 0) continue;
-        column.push(j);
+        column.push(j - firstColumn);
         cost.push(off);
       }
       start.push(column.length);
     }
-    const columnOfRow = new Int32Array(rows.length);
-    solver.solve({ rows: rows.length, columns: columns.length, start, column, cost }, columnOfRow);
-    rows.forEach((i, row) => {
-      if (columnOfRow[row] >= 0) partner[i] = columns[columnOfRow[row]];
-    });
+    const columnOfRow = new Int32Array(rows);
+    solver.solve({ rows, columns, start, column, cost }, columnOfRow);
+    for (let row = 0; row < rows; row++) {
+      if (columnOfRow[row] < 0) continue;
+      partner[rowOrder.point[rowOrder.start[f] + row]] = columnOrder.point[firstColumn + columnOfRow[row]];
+    }
   }
   return partner;
 }
@@ -65,28 +54,20 @@ export function matchPoints(
 /** Distance of each point to the nearest other point of its frame, px; Infinity beyond 50 px. */
 export function nearestNeighbourPx(points: TimedPoints, frames: number): Float64Array {
   const nearest = new Float64Array(points.frame.length).fill(Infinity);
-  for (const list of pointsByFrame(points, frames)) {
-    list.sort((a, b) => points.xPx[a] - points.xPx[b]);
-    for (let k = 0; k < list.length; k++) {
-      for (let m = k + 1; m < list.length; m++) {
-        const dx = points.xPx[list[m]] - points.xPx[list[k]];
+  const { start, point, xPx, yPx } = orderByFrame(points, frames);
+  for (let f = 0; f < frames; f++) {
+    const end = start[f + 1];
+    for (let k = start[f]; k < end; k++) {
+      for (let m = k + 1; m < end; m++) {
+        const dx = xPx[m] - xPx[k];
         if (dx > FAR_PX) break;
-        const distance = Math.hypot(dx, points.yPx[list[m]] - points.yPx[list[k]]);
-        nearest[list[k]] = Math.min(nearest[list[k]], distance);
-        nearest[list[m]] = Math.min(nearest[list[m]], distance);
+        const dy = yPx[m] - yPx[k];
+        const distance = Math.sqrt(dx * dx + dy * dy);
+        if (distance > FAR_PX) continue;
+        nearest[point[k]] = Math.min(nearest[point[k]], distance);
+        nearest[point[m]] = Math.min(nearest[point[m]], distance);
       }
     }
   }
   return nearest;
-}
-
-function firstFrom(sorted: number[], x: ArrayLike<number>, least: number): number {
-  let low = 0;
-  let high = sorted.length;
-  while (low < high) {
-    const middle = (low + high) >> 1;
-    if (x[sorted[middle]] < least) low = middle + 1;
-    else high = middle;
-  }
-  return low;
 }

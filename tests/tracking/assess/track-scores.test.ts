@@ -1,6 +1,8 @@
 import { expect, test } from 'vitest';
 import { scoreTracks } from '@/tracking/assess/track-scores';
+import { createRandom, mixSeed, type Random } from '@/tracking/random';
 import { expectWithin } from '@/tests/helpers/expect-within';
+import { bruteForceScores } from './brute-force-scores';
 
 interface Piece {
   x: number;
@@ -64,6 +66,56 @@ test('the truth itself scores 1, nothing at all scores 0', () => {
   });
 });
 
+test('of all ways of pairing the one with the least distance counts', () => {
+  // Oracle: the definitions with every pairing tried out.
+  let unpaired = 0;
+  for (let seed = 1; seed <= 400; seed++) {
+    const random = createRandom(mixSeed(seed, 0x5c0));
+    const truth = wanderers(1 + random.integer(4), random);
+    const estimated = wanderers(random.integer(6), random);
+    for (const gatePx of [2, 5]) {
+      const scores = scoreTracks(truth, estimated, 8, gatePx);
+      const expected = bruteForceScores(truth, estimated, 8, gatePx);
+      expectWithin(scores.alpha, expected.alpha, { abs: 1e-12 });
+      expectWithin(scores.beta, expected.beta, { abs: 1e-12 });
+      expectWithin(scores.jaccard, expected.jaccard, { abs: 1e-12 });
+      expectWithin(scores.jaccardTracks, expected.jaccardTracks, { abs: 1e-12 });
+      if (expected.jaccard === 0) unpaired++;
+      else expectWithin(scores.rmsePx, expected.rmsePx, { abs: 1e-12 });
+      expect(scores.beta).toBeLessThanOrEqual(scores.alpha + 1e-12);
+      expect(scores.alpha).toBeGreaterThanOrEqual(-1e-12);
+    }
+  }
+  expect(unpaired, 'cases in which nothing is paired').toBeGreaterThan(10);
+  expect(unpaired, 'cases in which nothing is paired').toBeLessThan(400);
+});
+
+test('scores stay the same when the order of tracks changes and when truth and time are mirrored', () => {
+  for (let seed = 1; seed <= 20; seed++) {
+    const random = createRandom(mixSeed(seed, 0x0d3));
+    const truth = wanderers(4, random);
+    const estimated = wanderers(5, random);
+    const scores = scoreTracks(truth, estimated, 8);
+    const backwards = (tracks: typeof truth) => {
+      const pieces = tracks.start.slice(1).map((end, i) => ({ from: tracks.start[i], end }));
+      const order = pieces.reverse().flatMap(({ from, end }) => range(from, end).reverse());
+      const start = [0];
+      for (const { from, end } of pieces) start.push(start[start.length - 1] + end - from);
+      return {
+        start,
+        frame: order.map((p) => 7 - tracks.frame[p]),
+        xPx: order.map((p) => -tracks.xPx[p]),
+        yPx: order.map((p) => tracks.yPx[p]),
+      };
+    };
+    const mirrored = scoreTracks(backwards(truth), backwards(estimated), 8);
+    expectWithin(mirrored.alpha, scores.alpha, { abs: 1e-12 });
+    expectWithin(mirrored.beta, scores.beta, { abs: 1e-12 });
+    expectWithin(mirrored.jaccard, scores.jaccard, { abs: 1e-12 });
+    expectWithin(mirrored.jaccardTracks, scores.jaccardTracks, { abs: 1e-12 });
+  }
+});
+
 test('one estimated track that changes from one tracer to another counts for one of them only', () => {
   const scores = scoreTracks(TRUTH, joined(), 10);
   // 6 of 20 true points are in the paired track, 4 estimated points are not: 6 / (20 + 10 - 6).
@@ -80,4 +132,28 @@ function joined() {
     xPx: [...a.xPx, ...b.xPx],
     yPx: [...a.yPx, ...b.yPx],
   };
+}
+
+const range = (from: number, to: number) => Array.from({ length: to - from }, (_, k) => from + k);
+
+/** Tracks with holes that wander about a few places, so that several come near each other. */
+function wanderers(count: number, random: Random) {
+  const start = [0];
+  const frame: number[] = [];
+  const xPx: number[] = [];
+  const yPx: number[] = [];
+  for (let i = 0; i < count; i++) {
+    const x = 4 * random.integer(2);
+    const first = random.integer(3);
+    const last = 7 - random.integer(3);
+    for (let f = first; f <= last; f++) {
+      if (random.uniform() < 0.2) continue;
+      frame.push(f);
+      xPx.push(x + random.normal());
+      yPx.push(random.normal());
+    }
+    start.push(frame.length);
+  }
+  if (frame.length > 0 || count === 0) return { start, frame, xPx, yPx };
+  return { start: start.map((_, i) => Math.min(i, 1)), frame: [0], xPx: [0], yPx: [0] };
 }

@@ -1,0 +1,38 @@
+import { createDetector } from '../detect';
+import { linkSpots } from '../link';
+import { measureImage, pickModelFrames } from '../measure-image';
+import { resolveRecipe } from '../recipe';
+import { createRenderer } from '../simulate/render';
+import type { Scene, SceneCamera } from '../simulate/scene';
+import { createSpotSink } from '../spots';
+import type { Frame, ImageModel, Recipe, RecipeRequest, Spots, Tracks } from '../types';
+
+/** Only steps of real time depend on the pixel size; the studies compare pixels. */
+const PIXEL_SIZE_M = 1e-5;
+
+/** All that the core makes of a simulated recording. */
+export interface RecordingRun {
+  model: ImageModel;
+  recipe: Recipe;
+  spots: Spots;
+  tracks: Tracks;
+}
+
+/** Renders a scene, measures camera and spots, detects and links; what is not requested is automatic. */
+export function runRecording(scene: Scene, camera: SceneCamera, request: RecipeRequest = {}): RecordingRun {
+  const { widthPx: width, heightPx: height, frames } = scene;
+  const renderer = createRenderer(scene, camera);
+  const recorded = Array.from({ length: frames }, (_, index) => renderer.renderFrame(index));
+  const frameAt = (index: number): Frame => ({ width, height, counts: Float32Array.from(recorded[index]) });
+  const model = measureImage(pickModelFrames(frames, width * height).map(frameAt), request);
+  const recipe = resolveRecipe(request, { ...model, frames, pixelSizeM: PIXEL_SIZE_M });
+  const detector = createDetector(model, recipe);
+  const sink = createSpotSink();
+  const room = frameAt(0);
+  for (let f = 0; f < frames; f++) {
+    room.counts.set(recorded[f]);
+    detector.detect(room, f, sink);
+  }
+  const spots = sink.spots();
+  return { model, recipe, spots, tracks: linkSpots(spots, { frames, width, height }, recipe) };
+}
