@@ -104,7 +104,7 @@ export interface PeakList {
 }
 
 /**
- * Pixels above `level` that none of their eight neighbours exceeds; of equal neighbours the first
+ * Pixels from `level` on that none of their eight neighbours exceeds; of equal neighbours the first
  * in reading order counts.
  */
 export function findPeaks(
@@ -118,7 +118,7 @@ export function findPeaks(
   for (let y = 0; y < height; y++) {
     for (let at = y * width, end = at + width; at < end; at++) {
       const value = response[at];
-      if (value < level) continue;
+      if (!(value >= level)) continue;
       const x = at - y * width;
       const left = x > 0;
       const right = x < width - 1;

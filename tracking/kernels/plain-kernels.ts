@@ -21,14 +21,16 @@ function forImages({ width, height, spotSigmaPx }: ImageSpec): FrameKernels {
   let saturationE = Infinity;
 
   const toElectrons: FrameKernels['toElectrons'] = (counts, scale) => {
-    const { offsetCounts, perCount } = scale;
+    // Rounded to 32 bits on the way, as vectors do it, so that both sets agree on what is saturated.
+    const offset = Math.fround(scale.offsetCounts);
+    const perCount = Math.fround(scale.perCount);
     saturationE = saturationElectrons(scale);
     for (let i = 0; i < pixels; i++) {
-      const e = (counts[i] - offsetCounts) * perCount;
+      const e = Math.fround(Math.fround(counts[i] - offset) * perCount);
       const good = bad[i] === 0 && e - e === 0;
       electrons[i] = good ? e : 0;
       // A saturated pixel shows that there is light, but not how much.
-      usable[i] = good && electrons[i] < saturationE ? 1 : 0;
+      usable[i] = good && e < saturationE ? 1 : 0;
     }
   };
 

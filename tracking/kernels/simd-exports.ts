@@ -17,7 +17,39 @@ export interface SimdExports {
     pixels: number,
     offset: number,
     perCount: number,
+    saturation: number,
   ): void;
+  noiseRow(
+    electrons: number,
+    usable: number,
+    background: number,
+    bare: number,
+    model: number,
+    noise: number,
+    pixels: number,
+    scale: number,
+    shift: number,
+    floor: number,
+    saturation: number,
+  ): void;
+  correlateRow(
+    row: number,
+    weights: number,
+    reach: number,
+    correction: number,
+    out: number,
+    pixels: number,
+  ): void;
+  correlateColumns(
+    row: number,
+    stride: number,
+    weights: number,
+    reach: number,
+    correction: number,
+    out: number,
+    pixels: number,
+  ): void;
+  findPeaks(response: number, width: number, height: number, level: number, peaks: number): number;
 }
 
 /** Makes an instance with a memory of its own. */

@@ -1,0 +1,60 @@
+/**
+ * Pixels from `level` on that none of their eight neighbours exceeds; of equal neighbours the first in
+ * reading order counts.
+ *
+ * @param response f32 per pixel @param peaks i32, room for a peak in every block of 2 x 2 pixels
+ * @returns number of peaks
+ */
+export function findPeaks(response: usize, width: i32, height: i32, level: f32, peaks: usize): i32 {
+  const levels = f32x4.splat(level);
+  const first = peaks;
+  for (let y = 0; y < height; y++) {
+    const row = response + ((<usize>y * <usize>width) << 2);
+    let x = 0;
+    for (; x + 16 <= width; x += 16) {
+      const at = row + ((<usize>x) << 2);
+      const a = f32x4.ge(v128.load(at), levels);
+      const b = f32x4.ge(v128.load(at, 16), levels);
+      const c = f32x4.ge(v128.load(at, 32), levels);
+      const d = f32x4.ge(v128.load(at, 48), levels);
+      // Nearly always nothing in 16 pixels is bright enough.
+      if (!v128.any_true(v128.or(v128.or(a, b), v128.or(c, d)))) continue;
+      let bright = i32x4.bitmask(a) | (i32x4.bitmask(b) << 4) | (i32x4.bitmask(c) << 8);
+      bright |= i32x4.bitmask(d) << 12;
+      while (bright) {
+        const here = x + ctz(bright);
+        bright &= bright - 1;
+        if (!isPeak(response, width, height, here, y)) continue;
+        store<i32>(peaks, y * width + here);
+        peaks += 4;
+      }
+    }
+    for (; x < width; x++) {
+      if (!(load<f32>(row + ((<usize>x) << 2)) >= level) || !isPeak(response, width, height, x, y)) continue;
+      store<i32>(peaks, y * width + x);
+      peaks += 4;
+    }
+  }
+  return <i32>((peaks - first) >> 2);
+}
+
+function isPeak(response: usize, width: i32, height: i32, x: i32, y: i32): bool {
+  const stride = (<usize>width) << 2;
+  const at = response + ((<usize>y * <usize>width + <usize>x) << 2);
+  const value = load<f32>(at);
+  const left = x > 0;
+  const right = x < width - 1;
+  if (left && load<f32>(at - 4) >= value) return false;
+  if (right && load<f32>(at + 4) > value) return false;
+  if (y > 0) {
+    const up = at - stride;
+    if (load<f32>(up) >= value || (left && load<f32>(up - 4) >= value)) return false;
+    if (right && load<f32>(up + 4) >= value) return false;
+  }
+  if (y < height - 1) {
+    const down = at + stride;
+    if (load<f32>(down) > value || (left && load<f32>(down - 4) > value)) return false;
+    if (right && load<f32>(down + 4) > value) return false;
+  }
+  return true;
+}

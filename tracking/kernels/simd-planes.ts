@@ -1,0 +1,70 @@
+import type { Arena } from './arena';
+
+/** Kernels work on 16 pixels at a time and may write so many bytes behind a plane's last pixel. */
+const SLACK_BYTES = 64;
+/** Rows that are correlated before the next ones are fetched: few enough to stay in the cache. */
+const BAND_ROWS = 32;
+
+/** Where everything lies in the memory of one instance, byte addresses. */
+export interface SimdPlanes {
+  bad: number;
+  background: number;
+  electrons: number;
+  usable: number;
+  bare: number;
+  model: number;
+  /** Holds the counts of a frame too, which nobody needs once there is a response. */
+  response: number;
+  /** i32, room for a peak in every block of 2 x 2 pixels, which is as many as there can be. */
+  peaks: number;
+  peaksMost: number;
+  /** f32 at distance 0 .. reach. */
+  weights: number;
+  /** f32 factor per column of the response. */
+  correctionX: number;
+  /** f32, one row of noise with `reach` zeros before it and at least as many after it. */
+  noise: number;
+  noiseLength: number;
+  /** f32, rows that are correlated along x: `bandRows` of them and `reach` before and after. */
+  band: number;
+  bandRows: number;
+  /** Pixels of a row that the filter works on, a multiple of 16. */
+  paddedWidth: number;
+  scratch: number;
+}
+
+/** Reserves the planes of images of a size; the arena must grow before they are used. */
+export function reservePlanes(
+  arena: Arena,
+  width: number,
+  height: number,
+  reach: number,
+  scratchBytes: number,
+): SimdPlanes {
+  const pixels = width * height;
+  const floats = (length: number) => arena.reserve(4 * length + SLACK_BYTES);
+  const bytes = (length: number) => arena.reserve(length + SLACK_BYTES);
+  const paddedWidth = Math.ceil(width / 16) * 16;
+  const noiseLength = paddedWidth + 2 * reach;
+  const peaksMost = Math.ceil(width / 2) * Math.ceil(height / 2);
+  const bandRows = Math.min(BAND_ROWS, height);
+  return {
+    bad: bytes(pixels),
+    background: floats(pixels),
+    electrons: floats(pixels),
+    usable: bytes(pixels),
+    bare: floats(pixels),
+    model: floats(pixels),
+    response: floats(pixels),
+    peaks: floats(peaksMost),
+    peaksMost,
+    weights: floats(reach + 1),
+    correctionX: floats(paddedWidth),
+    noise: floats(noiseLength),
+    noiseLength,
+    band: floats(paddedWidth * (bandRows + 2 * reach)),
+    bandRows,
+    paddedWidth,
+    scratch: bytes(scratchBytes),
+  };
+}
