@@ -1,3 +1,5 @@
+import { complementaryError } from '../normal-tail';
+
 /** A mean of estimates that may differ by more than their errors. */
 export interface RandomEffects {
   mean: number;
@@ -48,20 +50,4 @@ export function chiSquareTail(x: number, degrees: number): number {
   let term = Math.exp(-half) / Math.sqrt(Math.PI * half);
   for (let i = 0; i < (degrees - 1) / 2; i++) sum += term *= half / (i + 0.5);
   return sum;
-}
-
-/** erfc for x >= 0: series near 0, continued fraction beyond (Abramowitz & Stegun 7.1.5, 7.1.14). */
-function complementaryError(x: number): number {
-  if (x < 2) {
-    let term = x;
-    let sum = x;
-    for (let n = 1; n < 60; n++) {
-      term *= -(x * x) / n;
-      sum += term / (2 * n + 1);
-    }
-    return 1 - (2 / Math.sqrt(Math.PI)) * sum;
-  }
-  let fraction = 0;
-  for (let n = 60; n > 0; n--) fraction = n / 2 / (x + fraction);
-  return Math.exp(-x * x) / (Math.sqrt(Math.PI) * (x + fraction));
 }
