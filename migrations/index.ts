@@ -1,6 +1,7 @@
 import type { QueryInterface } from 'sequelize';
 import * as createTables from './20261201120000-create-tables';
 import * as indexPointsByTrack from './20261201121000-index-points-by-track';
+import * as addUploadMetadataAndQuota from './20261201122000-add-upload-metadata-and-quota';
 
 export interface Migration {
   /** File name without its ending: the same for sources and bundles. */
@@ -13,4 +14,5 @@ export interface Migration {
 export const migrations: Migration[] = [
   { name: '20261201120000-create-tables', ...createTables },
   { name: '20261201121000-index-points-by-track', ...indexPointsByTrack },
+  { name: '20261201122000-add-upload-metadata-and-quota', ...addUploadMetadataAndQuota },
 ];

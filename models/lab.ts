@@ -12,6 +12,8 @@ export class Lab extends Model<InferAttributes<Lab>, InferCreationAttributes<Lab
   declare id: string;
   declare name: string;
   declare slug: string;
+  /** Null where the bound of all laboratories holds. */
+  declare quotaBytes: CreationOptional<string | null>;
   declare createdAt: CreationOptional<Date>;
   declare updatedAt: CreationOptional<Date>;
 
@@ -21,6 +23,7 @@ export class Lab extends Model<InferAttributes<Lab>, InferCreationAttributes<Lab
         id: { type: DataTypes.UUID, primaryKey: true },
         name: DataTypes.TEXT,
         slug: DataTypes.TEXT,
+        quotaBytes: DataTypes.BIGINT,
         createdAt: DataTypes.DATE,
         updatedAt: DataTypes.DATE,
       },

@@ -6,7 +6,26 @@ import { databaseUrl } from '@/lib/env';
  * must not take a connection from the pool for as long as an upload runs. When the process dies
  * its connection ends, and with it every lock.
  */
-const shared = globalThis as unknown as { beadlineLocks?: Promise<pg.Client> };
+const shared = globalThis as unknown as {
+  beadlineLocks?: Promise<pg.Client>;
+  beadlineLockEvents?: LockEvents;
+};
+
+/** What a holder of locks wants to hear. */
+export interface LockEvents {
+  /** The connection is gone, and with it every lock of this process: others may hold them from now on. */
+  lost: () => void;
+  /** Another process would like to have this lock. */
+  wanted: (name: string) => void;
+}
+
+/** Tells this process of what happens to its locks. Set once. */
+export function onLockEvents(events: LockEvents): void {
+  shared.beadlineLockEvents = events;
+}
+
+/** Channel by which processes ask each other for locks. */
+const WANTED = 'beadline_locks_wanted';
 
 function connection(): Promise<pg.Client> {
   return (shared.beadlineLocks ??= open());
@@ -18,11 +37,16 @@ async function open(): Promise<pg.Client> {
     application_name: 'beadline locks',
     keepAlive: true,
   });
-  const forget = () => delete shared.beadlineLocks;
+  const forget = () => {
+    delete shared.beadlineLocks;
+    shared.beadlineLockEvents?.lost();
+  };
   client.on('error', forget);
   client.on('end', forget);
+  client.on('notification', ({ payload }) => shared.beadlineLockEvents?.wanted(payload ?? ''));
   try {
     await client.connect();
+    await client.query(`LISTEN ${WANTED}`);
   } catch (cause) {
     forget();
     throw cause;
@@ -41,6 +65,11 @@ export async function trySessionLock(name: string): Promise<boolean> {
     [name],
   );
   return result.rows[0].taken;
+}
+
+/** Asks whichever process holds the lock to let go of it, if it can. */
+export async function askForSessionLock(name: string): Promise<void> {
+  await (await connection()).query('SELECT pg_notify($1, $2)', [WANTED, name]);
 }
 
 export async function releaseSessionLock(name: string): Promise<void> {

@@ -19,6 +19,8 @@ export class Upload extends Model<InferAttributes<Upload>, InferCreationAttribut
   declare filename: string;
   declare bytes: string;
   declare sha256: CreationOptional<string | null>;
+  /** `Upload-Metadata` as it was sent. */
+  declare metadata: CreationOptional<string | null>;
   declare state: 'arriving' | 'finished' | 'ended';
   declare expiresAt: CreationOptional<Date | null>;
   declare finishedAt: CreationOptional<Date | null>;
@@ -38,6 +40,7 @@ export class Upload extends Model<InferAttributes<Upload>, InferCreationAttribut
         filename: DataTypes.TEXT,
         bytes: DataTypes.BIGINT,
         sha256: DataTypes.TEXT,
+        metadata: DataTypes.TEXT,
         state: DataTypes.TEXT,
         expiresAt: DataTypes.DATE,
         finishedAt: DataTypes.DATE,

@@ -88,5 +88,7 @@ export const storageViewSchema = z.object({
   bytes: z.int(),
   arrivingBytes: z.int(),
   freeBytes: z.int().nullable(),
+  /** What the laboratory may keep. */
+  quotaBytes: z.int(),
 });
 export type StorageView = z.infer<typeof storageViewSchema>;

@@ -1,6 +1,7 @@
 import { statfs } from 'node:fs/promises';
 import { dataDir } from '@/lib/env';
 import type { StorageView } from '@/lib/views/lab-view';
+import { KEPT_RECORDING, quotaOf } from './quota';
 import { selectRow } from './select';
 
 /** Bytes that are free on the disk of the data folder; null where the system does not say. */
@@ -13,9 +14,9 @@ export async function freeBytes(): Promise<number | null> {
 export async function labStorage(labId: string): Promise<StorageView> {
   const row = await selectRow<{ recordings: number; bytes: string; arriving: string }>(
     `SELECT count(*)::int AS recordings,
-       coalesce(sum(bytes) FILTER (WHERE state <> 'arriving'), 0) AS bytes,
-       coalesce(sum(bytes) FILTER (WHERE state = 'arriving'), 0) AS arriving
-     FROM recordings WHERE lab_id = $1`,
+       coalesce(sum(g.bytes) FILTER (WHERE g.state <> 'arriving' AND ${KEPT_RECORDING}), 0) AS bytes,
+       coalesce(sum(g.bytes) FILTER (WHERE g.state = 'arriving'), 0) AS arriving
+     FROM recordings g WHERE g.lab_id = $1`,
     [labId],
   );
   return {
@@ -23,5 +24,6 @@ export async function labStorage(labId: string): Promise<StorageView> {
     bytes: Number(row?.bytes ?? 0),
     arrivingBytes: Number(row?.arriving ?? 0),
     freeBytes: await freeBytes(),
+    quotaBytes: await quotaOf(labId),
   };
 }

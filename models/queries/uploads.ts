@@ -11,6 +11,7 @@ import { models } from '..';
 import { getSequelize } from '../database';
 import { listPage } from './list-page';
 import { iso } from './person';
+import { assertWithinQuota } from './quota';
 import { receivedBytes } from './received-bytes';
 import { execute, selectRow } from './select';
 
@@ -24,13 +25,15 @@ export interface UploadRow {
   position: number | null;
   filename: string;
   bytes: number;
+  /** `Upload-Metadata` as it was sent. */
+  metadata: string | null;
   state: 'arriving' | 'finished' | 'ended';
   expiresAt: Date | null;
   finishedAt: Date | null;
 }
 
 export const UPLOAD_COLUMNS = `id, lab_id AS "labId", user_id AS "userId", run_id AS "runId",
-  recording_id AS "recordingId", folder_id AS "folderId", position, filename, bytes::float8 AS bytes, state,
+  recording_id AS "recordingId", folder_id AS "folderId", position, filename, bytes::float8 AS bytes, metadata, state,
   expires_at AS "expiresAt", finished_at AS "finishedAt"`;
 
 /** @throws LabError NOT_FOUND, the same for ids that are none, unknown ones, and another laboratory's. */
@@ -45,7 +48,10 @@ export async function getUpload(labId: string, id: string): Promise<UploadRow> {
   return row;
 }
 
-/** Announces a folder of frames and makes the recording that all its files will be. */
+/**
+ * Announces a folder of frames and makes the recording that all its files will be.
+ * @throws LabError STORAGE_FULL above the laboratory's quota.
+ */
 export async function createFolder(
   maker: { labId: string; userId: string },
   runId: string,
@@ -55,6 +61,7 @@ export async function createFolder(
   const [id, recordingId] = [newId(), newId()];
   await getSequelize().transaction(async (transaction) => {
     const { name, files, bytes } = input;
+    await assertWithinQuota(labId, bytes, transaction);
     await models().Folder.create(
       { id, labId, runId, recordingId, name, files, bytes: String(bytes), createdBy: userId },
       { transaction },
@@ -81,16 +88,19 @@ export interface NewUpload {
   runId: string;
   bytes: number;
   metadata: UploadMetadata;
+  /** The same as it was sent. */
+  sentMetadata: string | null;
   expiresAt: Date;
 }
 
 /**
  * Writes down an upload before its first byte; a file of its own gets its recording here.
- * @throws LabError NOT_FOUND for a folder that is not of the run, STATE for a place that is taken.
+ * @throws LabError NOT_FOUND for a folder that is not of the run, STATE for a place that is taken,
+ *   STORAGE_FULL above the laboratory's quota, TOO_LARGE above what its folder was announced with.
  */
 export async function createUpload(
   maker: { labId: string; userId: string },
-  { runId, bytes, metadata, expiresAt }: NewUpload,
+  { runId, bytes, metadata, sentMetadata, expiresAt }: NewUpload,
 ): Promise<UploadRow> {
   const { labId, userId } = maker;
   const { filename, sha256 = null, folder, position = null } = metadata;
@@ -99,7 +109,7 @@ export async function createUpload(
     const recordingId =
       folder === undefined || position === null
         ? await createFileRecording(maker, { runId, bytes, filename, sha256 }, transaction)
-        : await placeInFolder(labId, { runId, folder, position }, transaction);
+        : await placeInFolder(labId, { runId, folder, position, bytes }, transaction);
     await models().Upload.create(
       {
         id,
@@ -112,6 +122,7 @@ export async function createUpload(
         filename,
         bytes: String(bytes),
         sha256,
+        metadata: sentMetadata,
         state: 'arriving',
         expiresAt,
       },
@@ -126,6 +137,7 @@ async function createFileRecording(
   file: { runId: string; bytes: number; filename: string; sha256: string | null },
   transaction: Transaction,
 ): Promise<string> {
+  await assertWithinQuota(maker.labId, file.bytes, transaction);
   const row = await models().Recording.create(
     {
       ...arriving(maker, file.runId),
@@ -143,12 +155,12 @@ async function createFileRecording(
 /** The folder's recording, once its place is known to be free. The folder's row is locked meanwhile. */
 async function placeInFolder(
   labId: string,
-  { runId, folder, position }: { runId: string; folder: string; position: number },
+  { runId, folder, position, bytes }: { runId: string; folder: string; position: number; bytes: number },
   transaction: Transaction,
 ): Promise<string> {
   const row = isId(folder)
-    ? await selectRow<{ recording_id: string; files: number }>(
-        'SELECT recording_id, files FROM folders WHERE lab_id = $1 AND id = $2 AND run_id = $3 FOR UPDATE',
+    ? await selectRow<{ recording_id: string; files: number; bytes: number }>(
+        'SELECT recording_id, files, bytes::float8 AS bytes FROM folders WHERE lab_id = $1 AND id = $2 AND run_id = $3 FOR UPDATE',
         [labId, folder, runId],
         transaction,
       )
@@ -157,13 +169,18 @@ async function placeInFolder(
   if (position >= row.files) {
     throw new LabError('STATE', `The folder has places 0 to ${row.files - 1}. Received ${position}.`);
   }
-  const taken = await selectRow(
-    `SELECT id FROM uploads WHERE folder_id = $1 AND position = $2 AND state <> 'ended'`,
+  const others = await selectRow<{ taken: boolean; bytes: number }>(
+    `SELECT coalesce(bool_or(position = $2), false) AS taken, coalesce(sum(bytes), 0)::float8 AS bytes
+     FROM uploads WHERE folder_id = $1 AND state <> 'ended'`,
     [folder, position],
     transaction,
   );
-  if (taken)
+  if (others?.taken)
     throw new LabError('STATE', `Place ${position} of this folder is taken: go on with that upload.`);
+  // The quota has been asked for what was announced: a folder can't grow past it.
+  if ((others?.bytes ?? 0) + bytes > row.bytes) {
+    throw new LabError('TOO_LARGE', `Larger than announced (${row.bytes.toLocaleString('en-US')} bytes).`);
+  }
   return row.recording_id;
 }
 

@@ -1,7 +1,7 @@
 import { readdir, stat } from 'node:fs/promises';
 import { LabError } from '@/lib/errors';
 import { log } from '@/auth/log';
-import { execute, selectRows } from '@/models/queries/select';
+import { execute, selectRow, selectRows } from '@/models/queries/select';
 import { forgetUpload, UPLOAD_COLUMNS, type UploadRow } from '@/models/queries/uploads';
 import { uploadsFolder } from '@/models/queries/received-bytes';
 import { finishUpload } from './finish-upload';
@@ -16,12 +16,12 @@ const STRAY_AFTER_MS = 24 * 3_600_000;
  * finished, those that have expired or lost their file are forgotten, stray files are removed.
  */
 export async function reconcileUploads(): Promise<void> {
-  const rows = await selectRows<UploadRow>(
-    `SELECT ${UPLOAD_COLUMNS} FROM uploads WHERE state = 'arriving' ORDER BY created_at`,
+  const rows = await selectRows<{ id: string }>(
+    `SELECT id FROM uploads WHERE state = 'arriving' ORDER BY created_at`,
   );
   for (const row of rows) {
     if (isBeingSent(row.id)) continue;
-    await withUploadLock(row.id, `reconciler:${row.id}`, () => settle(row)).catch((cause: unknown) => {
+    await withUploadLock(row.id, `reconciler:${row.id}`, () => settle(row.id)).catch((cause: unknown) => {
       // Another process is at it.
       if (cause instanceof LabError && cause.code === 'LOCKED') return;
       log.error({ err: cause, upload: row.id }, 'upload could not be settled');
@@ -30,7 +30,13 @@ export async function reconcileUploads(): Promise<void> {
   await removeStrays();
 }
 
-async function settle(row: UploadRow): Promise<void> {
+async function settle(id: string): Promise<void> {
+  // Read again under the lock: since the list was made it may have got bytes, and lives on, or been finished.
+  const row = await selectRow<UploadRow>(
+    `SELECT ${UPLOAD_COLUMNS} FROM uploads WHERE id = $1 AND state = 'arriving'`,
+    [id],
+  );
+  if (!row) return;
   const stored = await sizeOf(bytesFile(row.id));
   const atHome = stored === null ? await sizeOf(homeOf(row)) : null;
   const complete = (stored !== null && (await arrivedBytes(row.id)) === row.bytes) || atHome === row.bytes;

@@ -1,31 +1,28 @@
+import { statfs } from 'node:fs/promises';
 import { limit } from '@/lib/env';
 import { LabError } from '@/lib/errors';
-import { statfs } from 'node:fs/promises';
+import { formatBytes } from '@/lib/format/bytes';
 import { uploadsFolder } from '@/models/queries/received-bytes';
-import { labStorage } from '@/models/queries/storage';
 
 /** Share of the disk that new uploads leave free, so that those under way can end. */
 const RESERVE = 0.05;
 const GB = 1e9;
 
-const gb = (bytes: number): string => `${Number((bytes / GB).toPrecision(2))} GB`;
-
-/** @throws LabError TOO_LARGE above the limit of one file, STORAGE_FULL above quota or disk. */
-export async function assertRoomFor(labId: string, bytes: number): Promise<void> {
+/** @throws LabError TOO_LARGE above the limit of one file. */
+export function assertFileSize(bytes: number): void {
   const most = limit('uploadBytes');
-  if (bytes > most) throw new LabError('TOO_LARGE', `Limit is ${gb(most)}.`);
-  const { bytes: stored, arrivingBytes } = await labStorage(labId);
-  const quota = limit('labBytes');
-  if (stored + arrivingBytes + bytes > quota) {
-    throw new LabError(
-      'STORAGE_FULL',
-      `Storage full: this laboratory may keep ${gb(quota)}. Remove recordings first.`,
-    );
-  }
+  if (bytes > most) throw new LabError('TOO_LARGE', `Limit is ${Number((most / GB).toPrecision(2))} GB.`);
+}
+
+/** @throws LabError STORAGE_FULL when the disk could not take that much and keep its reserve. */
+export async function assertDiskHasRoom(bytes: number): Promise<void> {
   const disk = await statfs(uploadsFolder()).catch(() => null);
   if (!disk) return;
-  const free = disk.bavail * disk.bsize - RESERVE * disk.blocks * disk.bsize;
+  const free = Math.max(0, disk.bavail * disk.bsize - RESERVE * disk.blocks * disk.bsize);
   if (bytes > free) {
-    throw new LabError('STORAGE_FULL', `Storage full: ${gb(Math.max(0, free))} free, ${gb(bytes)} needed.`);
+    throw new LabError(
+      'STORAGE_FULL',
+      `Storage full: ${formatBytes(free)} free, ${formatBytes(bytes)} needed.`,
+    );
   }
 }

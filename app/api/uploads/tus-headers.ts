@@ -5,6 +5,7 @@ import { CHECKSUM_ALGORITHMS } from './checksum';
 
 export const TUS_VERSION = '1.0.0';
 export const UPLOADS_PATH = '/api/v1/uploads';
+export const PIECE_TYPE = 'application/offset+octet-stream';
 /** Extensions that this server offers, by their names in the protocol. */
 const EXTENSIONS = ['creation', 'creation-with-upload', 'expiration', 'termination', 'checksum'];
 
@@ -22,24 +23,25 @@ export const optionsHeaders = (): Record<string, string> => ({
  * "If the version specified by the Client is not supported by the Server, it MUST respond with the
  * 412 Precondition Failed status and MUST include the Tus-Version header into the response."
  */
-export function assertVersion(headers: Headers): void {
-  if (headers.get('tus-resumable') === TUS_VERSION) return;
-  throw new LabError('TUS_VERSION', `Send Tus-Resumable: ${TUS_VERSION}.`, {
+export function versionError(headers: Headers): LabError | null {
+  if (headers.get('tus-resumable') === TUS_VERSION) return null;
+  return new LabError('TUS_VERSION', `Send Tus-Resumable: ${TUS_VERSION}.`, {
     headers: { 'Tus-Version': TUS_VERSION },
   });
 }
 
-/** A whole number of a header, or null where it is none. */
+/** A non-negative whole number of a header, however large, or null where it is none. */
 export function wholeHeader(headers: Headers, name: string): number | null {
   const text = headers.get(name)?.trim() ?? '';
-  return /^\d{1,15}$/.test(text) ? Number(text) : null;
+  return /^\d+$/.test(text) ? Number(text) : null;
 }
 
 /** What every answer about an upload carries; the last one can be lost, so all of them name the recording. */
-export const headersOf = (row: Pick<UploadRow, 'recordingId'>): Record<string, string> => ({
+export const headersOf = (row: Pick<UploadRow, 'recordingId' | 'expiresAt'>): Record<string, string> => ({
   'Tus-Resumable': TUS_VERSION,
   'Beadline-Recording': row.recordingId,
   'Cache-Control': 'no-store',
+  ...(row.expiresAt ? expiresHeader(row.expiresAt) : {}),
 });
 
 /** "The value of the Upload-Expires header MUST be in RFC 9110 datetime format." */

@@ -3,8 +3,9 @@ import { newId } from '@/lib/ids';
 import { problemResponse } from '@/auth/problem';
 import type { RouteHandler } from '@/auth/with-member';
 import { memberRoute } from '../member-route';
-import { optionsHeaders, TUS_VERSION } from './tus-headers';
-import { beginUpload, endUpload, headOfUpload, patchUpload } from './tus-methods';
+import { beginUpload } from './begin-upload';
+import { optionsHeaders, TUS_VERSION, versionError } from './tus-headers';
+import { endUpload, headOfUpload, patchUpload } from './tus-methods';
 
 const begin = memberRoute('POST /uploads', ({ request, viewer }) => beginUpload(request, viewer));
 const head = memberRoute('HEAD /uploads/{upload}', ({ request, viewer, params }) =>
@@ -46,7 +47,11 @@ function dispatch(method: string, parts: string[], request: Request): Promise<Re
         ? { HEAD: head, PATCH: patch, DELETE: end }
         : {};
   const handler = handlers[method];
-  if (handler) return handler(request, context);
+  if (handler) {
+    // "In addition, the Server MUST NOT process the request": not even ask who sends it.
+    const refused = versionError(request.headers);
+    return refused ? Promise.resolve(problemResponse(refused, newId())) : handler(request, context);
+  }
   if (parts.length > 1) return Promise.resolve(problemResponse(notFound('upload'), newId()));
   // Bytes that were sent are never handed out here: GET is not among the methods.
   const known = Object.keys(handlers).join(', ');

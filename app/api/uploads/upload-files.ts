@@ -40,13 +40,6 @@ export async function dropUnchecked(id: string): Promise<void> {
   await markChecked(id);
 }
 
-/** The metadata as it was sent, for HEAD. */
-export async function storedMetadata(id: string): Promise<Record<string, string | null>> {
-  const text = await readFile(noteFile(id), 'utf8').catch(() => '{}');
-  const note = JSON.parse(text) as { metadata?: Record<string, string | null> };
-  return note.metadata ?? {};
-}
-
 export async function removeUploadFiles(id: string): Promise<void> {
   for (const path of [bytesFile(id), noteFile(id), uncheckedFile(id)]) await rm(path, { force: true });
 }

@@ -4,7 +4,7 @@ import { prolongUpload, type UploadRow } from '@/models/queries/uploads';
 import { uploadsFolder } from '@/models/queries/received-bytes';
 import { readChecksum, type Checksum } from './checksum';
 import { finishUpload } from './finish-upload';
-import { expiresHeader, headersOf, newExpiry } from './tus-headers';
+import { headersOf, newExpiry } from './tus-headers';
 import { passToTus } from './tus-server';
 import { watchBody } from './upload-body';
 import { arrivedBytes, dropUnchecked, markChecked, markUnchecked } from './upload-files';
@@ -12,6 +12,17 @@ import type { Holder } from './upload-locks';
 
 /** Below this a failed write means a full disk, bytes. */
 const FULL_BYTES = 4e6;
+
+/** Bytes of the body as its sender counts them; 0 where the count is not sent ahead. */
+export const announcedBytes = (headers: Headers): number => Number(headers.get('content-length') ?? 0);
+
+/** @throws LabError TOO_LARGE when more bytes come than the upload was announced with. */
+export function assertFits(bytes: number, atEnd: number): void {
+  if (atEnd > bytes) throw largerThanAnnounced(bytes);
+}
+
+const largerThanAnnounced = (bytes: number) =>
+  new LabError('TOO_LARGE', `Larger than announced (${bytes.toLocaleString('en-US')} bytes).`);
 
 /**
  * Takes in one piece of an upload, by PATCH or with the creation. The caller holds the lock.
@@ -26,24 +37,21 @@ export async function writePiece(
   holder: Holder,
 ): Promise<Record<string, string>> {
   const checksum = readChecksum(request.headers.get('upload-checksum'));
-  const announced = Number(request.headers.get('content-length') ?? 0);
-  if (offset + announced > row.bytes) {
-    throw new LabError('TOO_LARGE', `Larger than announced (${row.bytes.toLocaleString('en-US')} bytes).`);
-  }
+  assertFits(row.bytes, offset + announcedBytes(request.headers));
   const body = watchBody(request.body, checksum, holder);
   if (checksum) await markUnchecked(row.id, offset);
   const response = await passToTus(request, { method, id: row.id, body: body.stream });
   if (checksum) await verify(row.id, checksum, body.isWhole() && response.ok, body.digest());
   const arrived = await arrivedBytes(row.id);
-  if (!body.isWhole() && arrived < row.bytes) throw brokeOff(row, arrived);
+  if (!body.isWhole() && arrived < row.bytes) throw brokeOff(arrived);
   if (!response.ok) await explain(response, row, arrived);
   if (arrived === row.bytes) {
     await finishUpload(row);
-    return { ...headersOf(row), 'Upload-Offset': String(arrived) };
+    return { ...headersOf({ ...row, expiresAt: null }), 'Upload-Offset': String(arrived) };
   }
   const expiresAt = newExpiry();
   await prolongUpload(row.id, expiresAt);
-  return { ...headersOf(row), ...expiresHeader(expiresAt), 'Upload-Offset': String(arrived) };
+  return { ...headersOf({ ...row, expiresAt }), 'Upload-Offset': String(arrived) };
 }
 
 /**
@@ -63,19 +71,15 @@ async function verify(id: string, checksum: Checksum, whole: boolean, digest: Bu
 }
 
 /** The sender has gone or was cut off: seldom read by anyone, and asking again where to go on is the cure. */
-const brokeOff = (row: UploadRow, arrived: number) =>
+const brokeOff = (arrived: number) =>
   new LabError('OFFSET', `The piece broke off: ${arrived} bytes have arrived. Go on from there.`, {
-    headers: { ...headersOf(row), 'Upload-Offset': String(arrived) },
+    headers: { 'Upload-Offset': String(arrived) },
   });
 
 /** Says why nothing, or not all, could be written; what has arrived counts. */
 async function explain(response: Response, row: UploadRow, arrived: number): Promise<never> {
-  const headers = { ...headersOf(row), 'Upload-Offset': String(arrived) };
-  if (response.status === 413) {
-    throw new LabError('TOO_LARGE', `Larger than announced (${row.bytes.toLocaleString('en-US')} bytes).`, {
-      headers,
-    });
-  }
+  const headers = { 'Upload-Offset': String(arrived) };
+  if (response.status === 413) throw largerThanAnnounced(row.bytes);
   const disk = await statfs(uploadsFolder()).catch(() => null);
   if (disk && disk.bavail * disk.bsize < FULL_BYTES) {
     throw new LabError('STORAGE_FULL', 'Storage full. What has arrived is kept: go on when there is room.', {

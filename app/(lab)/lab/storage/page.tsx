@@ -10,13 +10,14 @@ export const metadata: Metadata = { title: 'Storage' };
 
 export default async function StoragePage() {
   const viewer = await requireViewer('see-storage', '/lab/storage');
-  const { recordings, bytes, arrivingBytes, freeBytes } = await labStorage(viewer.labId);
+  const { recordings, bytes, arrivingBytes, freeBytes, quotaBytes } = await labStorage(viewer.labId);
   return (
     <LabFrame viewer={viewer} tab="storage">
       <Facts
         items={[
           { name: 'Recordings', value: formatCount(recordings) },
           { name: 'Stored', value: formatBytes(bytes) },
+          { name: 'May keep', value: formatBytes(quotaBytes) },
           { name: 'Arriving', value: formatBytes(arrivingBytes) },
           { name: 'Free', value: freeBytes === null ? 'unknown' : formatBytes(freeBytes) },
         ]}

@@ -1,5 +1,5 @@
 import { memberRoute, methods } from '@/app/api/member-route';
-import { assertRoomFor } from '@/app/api/uploads/room-for';
+import { assertDiskHasRoom, assertFileSize } from '@/app/api/uploads/room-for';
 import { Answer } from '@/auth/answer';
 import { assertNotDeleted } from '@/models/queries/change-row';
 import { getRun } from '@/models/queries/runs';
@@ -10,7 +10,8 @@ export const dynamic = 'force-dynamic';
 export const { GET, POST, PUT, PATCH, DELETE } = methods({
   POST: memberRoute('POST /runs/{runId}/folders', async ({ viewer, params, body }) => {
     assertNotDeleted(await getRun(viewer.labId, params.runId), 'run');
-    await assertRoomFor(viewer.labId, body.bytes);
+    assertFileSize(body.bytes);
+    await assertDiskHasRoom(body.bytes);
     return new Answer(await createFolder(viewer, params.runId, body), 201);
   }),
 });
