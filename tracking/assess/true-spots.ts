@@ -20,15 +20,18 @@ export function lookAtTruth(scene: Scene, camera: SceneCamera): TrueSpots {
   const column = (point: number) => Math.max(0, Math.min(widthPx - 1, Math.round(xPx[point])));
   const row = (point: number) => Math.max(0, Math.min(heightPx - 1, Math.round(yPx[point])));
   const background = (x: number, y: number) => camera.backgroundE * light[y * widthPx + x];
+  const known = new Map<number, PositionBound>();
   return {
     snr(point) {
       const peak = share * brightnessE[point];
       return peak / Math.sqrt(peak + background(column(point), row(point)) + readVariance);
     },
     bound(point) {
+      const before = known.get(point);
+      if (before) return before;
       const x = column(point);
       const y = row(point);
-      return positionBound(
+      const bound = positionBound(
         brightnessE[point],
         background(x, y),
         camera.spotSigmaPx,
@@ -37,6 +40,8 @@ export function lookAtTruth(scene: Scene, camera: SceneCamera): TrueSpots {
         yPx[point] - y,
         { left: -x, right: widthPx - 1 - x, top: -y, bottom: heightPx - 1 - y },
       );
+      known.set(point, bound);
+      return bound;
     },
   };
 }

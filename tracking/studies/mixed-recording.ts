@@ -88,23 +88,49 @@ function meanScores(all: readonly TrackScores[]): TrackScores {
   };
 }
 
-/** Which goals recordings of mixed brightness reach. */
-export function mixedGoals(figures: MixedFigures) {
-  return {
-    rmsOverBound: figures.rmsOverBound <= MIXED_GOALS.rmsOverBoundMost,
-    residualRms: honest(figures.residualRms),
-    loneResidualRms: honest(figures.loneResidualRms),
-    overlappingResidualRms: honest(figures.overlappingResidualRms),
-    precision: figures.precision >= MIXED_GOALS.precisionLeast,
-    alpha: figures.alpha >= MIXED_GOALS.alphaLeast,
-    jaccard: figures.jaccard >= MIXED_GOALS.jaccardLeast,
-    jaccardTracks: figures.jaccardTracks >= MIXED_GOALS.jaccardTracksLeast,
-  };
+/** A figure that has a goal: how far a value is on the wrong side of it; at most 0 where it is reached. */
+type Miss = (figures: MixedFigures) => number;
+
+const honest = (rms: number) => Math.abs(rms - 1) - MIXED_GOALS.residualRmsOff;
+
+/** Goals for recordings of mixed brightness. */
+const MIXED_MISSES = {
+  rmsOverBound: (f) => f.rmsOverBound - MIXED_GOALS.rmsOverBoundMost,
+  residualRms: (f) => honest(f.residualRms),
+  loneResidualRms: (f) => honest(f.loneResidualRms),
+  overlappingResidualRms: (f) => honest(f.overlappingResidualRms),
+  precision: (f) => MIXED_GOALS.precisionLeast - f.precision,
+  alpha: (f) => MIXED_GOALS.alphaLeast - f.alpha,
+  jaccard: (f) => MIXED_GOALS.jaccardLeast - f.jaccard,
+  jaccardTracks: (f) => MIXED_GOALS.jaccardTracksLeast - f.jaccardTracks,
+} satisfies Record<string, Miss>;
+
+/** Goals for recordings in which every spot has SNR 2. */
+const SNR2_MISSES = {
+  rmsOverBound: (f) => f.rmsOverBound - MIXED_GOALS.rmsOverBoundAtSnr2Most,
+} satisfies Record<string, Miss>;
+
+type GoalName = keyof typeof MIXED_MISSES;
+
+/** Goals by the name of the figure that has them. */
+const goalsFor = (snr?: number): Partial<Record<GoalName, Miss>> =>
+  snr === undefined ? MIXED_MISSES : SNR2_MISSES;
+
+/** Which goals the figures reach. */
+export function goalsReached(figures: MixedFigures, snr?: number): Record<string, boolean> {
+  return Object.fromEntries(Object.entries(goalsFor(snr)).map(([name, miss]) => [name, miss(figures) <= 0]));
 }
 
-/** Which goals recordings reach whose spots all have SNR 2. */
-export const snr2Goals = (figures: MixedFigures) => ({
-  rmsOverBound: figures.rmsOverBound <= MIXED_GOALS.rmsOverBoundAtSnr2Most,
-});
-
-const honest = (rms: number) => Math.abs(rms - 1) <= MIXED_GOALS.residualRmsOff;
+/** For each figure with a goal the recording that comes off worst. */
+export function worstRuns(
+  runs: readonly MixedRun[],
+  snr?: number,
+): Record<string, { seed: number; value: number }> {
+  const all = runs.map((run) => ({ seed: run.seed, figures: mixedFigures([run]) }));
+  return Object.fromEntries(
+    Object.entries(goalsFor(snr)).map(([name, miss]) => {
+      const { seed, figures } = all.reduce((a, b) => (miss(b.figures) > miss(a.figures) ? b : a));
+      return [name, { seed, value: figures[name as GoalName] }];
+    }),
+  );
+}
