@@ -1,6 +1,8 @@
 import { assembleTracks } from './linking/assemble-tracks';
+import { BRIGHTNESS_UNTOLD, measureBrightness } from './linking/brightness-statistics';
 import { linkPass, type LinkLimits } from './linking/link-pass';
 import { firstStatistics, measureStatistics } from './linking/motion-statistics';
+import { createSpotTable } from './linking/spot-table';
 import { statisticsSample } from './linking/statistics-sample';
 import type { Recipe, Spots, Tracks } from './types';
 
@@ -38,8 +40,16 @@ export function linkSpots(
     mayVanishFrames: recipe.mayVanishFrames,
   };
   const sample = statisticsSample(spots);
-  const rough = linkPass(sample, limits, firstStatistics(spots, limits));
-  const before = linkPass(spots, limits, measureStatistics(sample, rough, limits));
+  const rough = linkPass(
+    createSpotTable(sample, BRIGHTNESS_UNTOLD),
+    limits,
+    firstStatistics(spots, limits),
+    BRIGHTNESS_UNTOLD,
+  );
+  const motion = measureStatistics(sample, rough, limits);
+  const brightness = measureBrightness(sample, rough);
+  const table = createSpotTable(spots, brightness);
+  const before = linkPass(table, limits, motion, brightness);
   return assembleTracks(spots, before, recipe.shortestTrackFrames);
 }
 

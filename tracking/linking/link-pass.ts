@@ -1,7 +1,9 @@
 import { createAssignmentSolver } from '../assign';
-import type { Spots } from '../types';
-import { MovingTracers, type MotionStatistics } from './motion';
+import type { BrightnessStatistics } from './brightness-statistics';
+import type { MotionStatistics } from './motion-statistics';
 import { SpotCells } from './spot-cells';
+import type { SpotTable } from './spot-table';
+import { TracerFilter } from './tracer-filter';
 
 /** A tracer farther than this many mean spacings from a spot can't be told from others. */
 const REACH_SPACINGS = 2.5;
@@ -21,49 +23,64 @@ export interface LinkLimits {
  *
  * @returns for each spot the spot before it in its track, or -1.
  */
-export function linkPass(spots: Spots, limits: LinkLimits, statistics: MotionStatistics): Int32Array {
-  const before = new Int32Array(spots.count).fill(-1);
+export function linkPass(
+  table: SpotTable,
+  limits: LinkLimits,
+  motion: MotionStatistics,
+  brightness: BrightnessStatistics,
+): Int32Array {
+  const before = new Int32Array(table.count).fill(-1);
   const { width, height, frames, longestStepPx, mayVanishFrames } = limits;
-  const spacing = Math.sqrt((width * height * Math.max(1, frames)) / Math.max(1, spots.count));
+  const spacing = Math.sqrt((width * height * Math.max(1, frames)) / Math.max(1, table.count));
   const reach = Math.min(longestStepPx, Math.max(REACH_SPACINGS * spacing, CELL_LEAST_PX));
   const cells = new SpotCells(width, height, Math.max(CELL_LEAST_PX, Math.min(reach, spacing)));
-  const tracers = new MovingTracers(statistics);
+  const tracers = new TracerFilter(motion, brightness, table, 1, 1024);
   const solver = createAssignmentSolver();
   const edges = createEdges();
+  let tracerCount = 0;
   let spotOf = new Int32Array(1024);
   let taken = new Uint8Array(1024);
 
+  const forget = () => {
+    let kept = 0;
+    for (let i = 0; i < tracerCount; i++) {
+      if (tracers.missed[i] > mayVanishFrames) continue;
+      if (kept !== i) tracers.copy(i, kept);
+      kept++;
+    }
+    tracerCount = kept;
+  };
+
   let from = 0;
-  while (from < spots.count) {
-    const frame = spots.frame[from];
+  while (from < table.count) {
+    const frame = table.frame[from];
     let to = from;
-    while (to < spots.count && spots.frame[to] === frame) to++;
-    cells.fill(spots.xPx, spots.yPx, from, to);
-    tracers.predict();
-    if (spotOf.length < tracers.count) spotOf = new Int32Array(2 * tracers.count);
+    while (to < table.count && table.frame[to] === frame) to++;
+    cells.fill(table.xPx, table.yPx, from, to);
+    for (let i = 0; i < tracerCount; i++) tracers.predict(i);
+    if (spotOf.length < tracerCount) spotOf = new Int32Array(2 * tracerCount);
     if (taken.length < to - from) taken = new Uint8Array(2 * (to - from));
     taken.fill(0, 0, to - from);
 
-    edges.clear(tracers.count);
-    for (let i = 0; i < tracers.count; i++) {
+    edges.clear(tracerCount);
+    for (let i = 0; i < tracerCount; i++) {
       const stepMost = reach * (tracers.missed[i] + 1);
-      cells.visit(tracers.lastX[i], tracers.lastY[i], stepMost, (s) => {
-        const stepX = spots.xPx[s] - tracers.lastX[i];
-        const stepY = spots.yPx[s] - tracers.lastY[i];
-        if (stepX * stepX + stepY * stepY > stepMost * stepMost) return;
-        const cost = tracers.cost(
-          i,
-          spots.xPx[s] - tracers.x[i],
-          spots.yPx[s] - tracers.y[i],
-          variance(spots, s),
-        );
+      const lastX = table.xPx[tracers.spot[i]];
+      const lastY = table.yPx[tracers.spot[i]];
+      const near = cells.find(lastX, lastY, stepMost);
+      for (let k = 0; k < near; k++) {
+        const s = from + cells.found[k];
+        const stepX = table.xPx[s] - lastX;
+        const stepY = table.yPx[s] - lastY;
+        if (stepX * stepX + stepY * stepY > stepMost * stepMost) continue;
+        const cost = tracers.cost(i, s);
         if (cost < 0) edges.add(s - from, cost);
-      });
+      }
       edges.endRow(i);
     }
-    solver.solve({ rows: tracers.count, columns: to - from, ...edges.arrays() }, spotOf);
+    solver.solve({ rows: tracerCount, columns: to - from, ...edges.arrays() }, spotOf);
 
-    for (let i = 0; i < tracers.count; i++) {
+    for (let i = 0; i < tracerCount; i++) {
       if (spotOf[i] < 0) {
         tracers.missed[i]++;
         continue;
@@ -71,29 +88,26 @@ export function linkPass(spots: Spots, limits: LinkLimits, statistics: MotionSta
       const s = from + spotOf[i];
       taken[spotOf[i]] = 1;
       before[s] = tracers.spot[i];
-      tracers.update(i, s, spots.xPx[s], spots.yPx[s], variance(spots, s));
+      tracers.update(i, s);
     }
-    tracers.forget(mayVanishFrames);
+    forget();
     for (let s = from; s < to; s++) {
-      if (taken[s - from] === 0) tracers.start(s, spots.xPx[s], spots.yPx[s], variance(spots, s));
+      if (taken[s - from] !== 0) continue;
+      if (tracerCount === tracers.room) tracers.grow();
+      tracers.start(tracerCount++, s);
     }
     // Frames without any spot pass too.
-    const next = to < spots.count ? spots.frame[to] : frame + 1;
-    for (let f = frame + 1; f < next && tracers.count > 0; f++) {
-      tracers.predict();
-      for (let i = 0; i < tracers.count; i++) tracers.missed[i]++;
-      tracers.forget(mayVanishFrames);
+    const next = to < table.count ? table.frame[to] : frame + 1;
+    for (let f = frame + 1; f < next && tracerCount > 0; f++) {
+      for (let i = 0; i < tracerCount; i++) {
+        tracers.predict(i);
+        tracers.missed[i]++;
+      }
+      forget();
     }
     from = to;
   }
   return before;
-}
-
-/** Mean of the two position variances of a spot; never 0, so that every covariance can be inverted. */
-function variance(spots: Spots, s: number): number {
-  const sx = spots.sxPx[s];
-  const sy = spots.syPx[s];
-  return 0.5 * (sx * sx + sy * sy) + 1e-6;
 }
 
 /** Edges row by row, in arrays that grow. */

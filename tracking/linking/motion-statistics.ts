@@ -1,6 +1,22 @@
 import type { Spots } from '../types';
 import type { LinkLimits } from './link-pass';
-import type { MotionStatistics } from './motion';
+
+/** How tracers move and appear, measured from a first pass of linking. */
+export interface MotionStatistics {
+  /** Variance of the change of velocity from frame to frame, px^2, per axis. */
+  jitter: number;
+  /** Velocity of a tracer before anything is known of it: mean and variance per axis, px and px^2. */
+  meanX: number;
+  meanY: number;
+  startVariance: number;
+  /** Share of steps in which a tracer suddenly changes its velocity, and the variance of that change. */
+  jumpShare: number;
+  jumpVariance: number;
+  /** Chance that a tracer in sight is found in a frame. */
+  foundShare: number;
+  /** New tracers and false spots per frame and px^2. */
+  newPerPx2: number;
+}
 
 /** Median of the square of a standard normal value. */
 const MEDIAN_OF_SQUARE = 0.4549364;

@@ -4,7 +4,7 @@ export class SpotCells {
   private rows = 1;
   private start = new Int32Array(2);
   private members = new Int32Array(64);
-  private from = 0;
+  found = new Int32Array(64);
 
   constructor(
     private readonly width: number,
@@ -19,8 +19,10 @@ export class SpotCells {
   /** Sorts in spots `from .. to - 1`. */
   fill(xPx: Float32Array, yPx: Float32Array, from: number, to: number): void {
     const count = to - from;
-    if (this.members.length < count) this.members = new Int32Array(2 * count);
-    this.from = from;
+    if (this.members.length < count) {
+      this.members = new Int32Array(2 * count);
+      this.found = new Int32Array(2 * count);
+    }
     const { start, members } = this;
     start.fill(0);
     for (let s = from; s < to; s++) start[this.cell(xPx[s], yPx[s]) + 1]++;
@@ -31,15 +33,20 @@ export class SpotCells {
     start[start.length - 1] = count;
   }
 
-  /** Calls `take` with each spot within a square of `reachPx` around a place, or a little farther. */
-  visit(x: number, y: number, reachPx: number, take: (spot: number) => void): void {
+  /**
+   * Writes to `found` the spots (counted from the first one filled in) in the cells within `reachPx`
+   * of a place, some a little farther; returns how many.
+   */
+  find(x: number, y: number, reachPx: number): number {
     const left = this.column(x - reachPx);
     const right = this.column(x + reachPx);
     const bottom = this.row(y + reachPx);
+    let count = 0;
     for (let r = this.row(y - reachPx); r <= bottom; r++) {
       const end = this.start[r * this.columns + right + 1];
-      for (let k = this.start[r * this.columns + left]; k < end; k++) take(this.from + this.members[k]);
+      for (let k = this.start[r * this.columns + left]; k < end; k++) this.found[count++] = this.members[k];
     }
+    return count;
   }
 
   private cell(x: number, y: number): number {
