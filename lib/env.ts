@@ -49,6 +49,16 @@ export const baseUrl = (): string =>
 /** Version of the code that computes, written beside each result. */
 export const codeVersion = (): string => process.env.BEADLINE_CODE_VERSION || 'unbuilt';
 
+/**
+ * Which kernels compute: 'auto' takes the fastest that run here, 'plain' those without WebAssembly.
+ * @throws SettingError when it is neither
+ */
+export function kernelChoice(): 'auto' | 'plain' {
+  const value = process.env.BEADLINE_KERNELS?.trim() || 'auto';
+  if (value === 'auto' || value === 'plain') return value;
+  throw new SettingError(`BEADLINE_KERNELS must be auto or plain. Received '${value}'.`);
+}
+
 /** A bound as set, else the usual one. @throws SettingError when what is set is not a number above 0 */
 export function limit(name: LimitName): number {
   const variable = `BEADLINE_LIMIT_${name.replace(/([a-z])([A-Z])/g, '$1_$2').toUpperCase()}`;

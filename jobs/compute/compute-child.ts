@@ -18,7 +18,17 @@ interface ChildRunOptions {
 }
 
 /** What a child may know of the machine; the address of the database and keys are not among it. */
-const ENVIRONMENT = ['PATH', 'LANG', 'LC_ALL', 'TZ', 'TMPDIR', 'NODE_ENV', 'BEADLINE_CODE_VERSION'];
+const ENVIRONMENT = [
+  'PATH',
+  'LANG',
+  'LC_ALL',
+  'TZ',
+  'TMPDIR',
+  'NODE_ENV',
+  'BEADLINE_CODE_VERSION',
+  'BEADLINE_ROOT',
+  'BEADLINE_KERNELS',
+];
 
 const MEMORY_LOOK_MS = 500;
 const STDERR_KEPT = 4000;

@@ -1,3 +1,4 @@
+import { kernelsOfThisProcess } from '@/jobs/compute/kernels';
 import type { StackReader } from '@/stacks/open-stack';
 import { measuredTracks } from '@/tracking/assess/measured-tracks';
 import { createDetector } from '@/tracking/detect';
@@ -43,7 +44,7 @@ export async function runCore(stack: StackReader, effort: Recipe['effort']): Pro
     for (let f = 0; f < frames; f++) matched.apply(room.counts, response);
   });
 
-  const detector = createDetector(model, recipe);
+  const detector = createDetector(model, recipe, kernelsOfThisProcess());
   const sink = createSpotSink();
   const throughReading = await cpuSeconds(async () => {
     for (let f = 0; f < frames; f++) {

@@ -1,7 +1,7 @@
 import { mkdtemp, rm, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import { afterAll, afterEach, beforeAll, expect, test } from 'vitest';
+import { afterAll, afterEach, beforeAll, expect, test, vi } from 'vitest';
 import { ComputePool, type PoolOptions } from '@/jobs/compute/pool';
 import type { LinkTracksInput } from '@/jobs/compute/tasks';
 import { until } from '../helpers/until';
@@ -80,6 +80,13 @@ test('a child is not told the address of the database nor any key', async () => 
   delete process.env.BEADLINE_TEST_SECRET;
   expect(names).toContain('PATH');
   for (const name of names) expect(name).not.toMatch(/DATABASE|SECRET|TOKEN|PASSWORD/);
+});
+
+test('a child computes with the kernels that its parent was told to use', async () => {
+  vi.stubEnv('BEADLINE_KERNELS', 'plain');
+  const names = (await makePool(1).run('linkTracks', ask('env'))) as unknown as string[];
+  vi.unstubAllEnvs();
+  expect(names).toContain('BEADLINE_KERNELS');
 });
 
 test('no more children run at once than the pool allows, and they are kept for the next work', async () => {

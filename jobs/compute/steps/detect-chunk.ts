@@ -3,6 +3,7 @@ import { createDetector } from '@/tracking/detect';
 import { createSpotSink, encodeSpots } from '@/tracking/spots';
 import type { Frame } from '@/tracking/types';
 import { decodeImageModel } from '../encode-image-model';
+import { kernelsOfThisProcess } from '../kernels';
 import type { DetectChunkInput, DetectChunkOutput } from '../tasks';
 import type { WorkContext } from './work-context';
 
@@ -11,7 +12,10 @@ let last: { key: string; detector: ReturnType<typeof createDetector> } | null = 
 
 function detectorFor({ modelKey, model, recipe }: DetectChunkInput): ReturnType<typeof createDetector> {
   if (last?.key !== modelKey)
-    last = { key: modelKey, detector: createDetector(decodeImageModel(model), recipe) };
+    last = {
+      key: modelKey,
+      detector: createDetector(decodeImageModel(model), recipe, kernelsOfThisProcess()),
+    };
   return last.detector;
 }
 

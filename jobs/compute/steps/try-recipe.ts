@@ -4,6 +4,7 @@ import { linkSpots } from '@/tracking/link';
 import { concatSpots, createSpotSink } from '@/tracking/spots';
 import { resolveRecipe } from '@/tracking/recipe';
 import type { ImageModel, Spots } from '@/tracking/types';
+import { kernelsOfThisProcess } from '../kernels';
 import type { TryRecipeInput, TryRecipeOutput } from '../tasks';
 import { appendTracks } from './append-tracks';
 import { frameNoise } from './frame-noise';
@@ -23,7 +24,7 @@ export async function tryRecipe(input: TryRecipeInput, context: WorkContext): Pr
     const model = await measuredModel(stack, input, context);
     const image = { frames: stack.frames, width: stack.width, height: stack.height };
     const recipe = resolveRecipe(request, { ...model, ...image, pixelSizeM: conditions.pixelSize_m });
-    const detector = createDetector(model, recipe);
+    const detector = createDetector(model, recipe, kernelsOfThisProcess());
     const frames: TryRecipeOutput['frames'] = [];
     for (const frame of Array.from(new Set(input.frames)).sort((a, b) => a - b)) {
       const picture = await stack.readFrame(frame);
