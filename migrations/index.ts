@@ -2,6 +2,8 @@ import type { QueryInterface } from 'sequelize';
 import * as createTables from './20261201120000-create-tables';
 import * as indexPointsByTrack from './20261201121000-index-points-by-track';
 import * as addUploadMetadataAndQuota from './20261201122000-add-upload-metadata-and-quota';
+import * as addMotionMeasures from './20261201130000-add-motion-measures';
+import * as addMailAndFileChecks from './20261201140000-add-mail-and-file-checks';
 
 export interface Migration {
   /** File name without its ending: the same for sources and bundles. */
@@ -15,4 +17,6 @@ export const migrations: Migration[] = [
   { name: '20261201120000-create-tables', ...createTables },
   { name: '20261201121000-index-points-by-track', ...indexPointsByTrack },
   { name: '20261201122000-add-upload-metadata-and-quota', ...addUploadMetadataAndQuota },
+  { name: '20261201130000-add-motion-measures', ...addMotionMeasures },
+  { name: '20261201140000-add-mail-and-file-checks', ...addMailAndFileChecks },
 ];

@@ -1,5 +1,7 @@
+import type { Dispersion } from './dispersion/dispersion';
 import type { Estimate } from './estimates/estimate';
 import type { ReconnectionCandidate } from './pairs/candidate';
+import type { VelocityTail } from './tails/velocity-tails';
 import type { VelocityPdf } from './velocity-pdf-shape';
 
 /** What is measured of each track; entry i of every array belongs to track i. */
@@ -47,6 +49,11 @@ export interface PopulationSummary {
   note: string;
 }
 
+/** How velocities are made up beyond their distribution: spreading, memory, tails. */
+export interface MotionMeasures extends Dispersion {
+  tails: VelocityTail[];
+}
+
 export interface PairSummary {
   /** Pairs that came within the closest approach, with enough points and a parting: those that were tested. */
   tested: number;
@@ -63,6 +70,7 @@ export interface FlowMeasures {
   tracks: TrackMeasures;
   populations: PopulationSummary;
   pdfs: VelocityPdf[];
+  motion: MotionMeasures;
   pairs: PairSummary;
   /** In order of their meeting, then y, then x. */
   candidates: ReconnectionCandidate[];

@@ -1,7 +1,9 @@
+import { measureDispersion } from './dispersion/dispersion';
 import { lineDensityEstimates } from './estimates/line-density-estimates';
 import type { FlowMeasures, ImageSize, MeasureFlowOptions } from './flow-measures';
 import { findCandidates } from './pairs/find-candidates';
 import { findPopulations } from './populations/populations';
+import { velocityTails } from './tails/velocity-tails';
 import { trackMeans } from './track-means';
 import type { Conditions, Recipe, Tracks } from './types';
 import { velocityPdfs } from './velocity-pdfs/velocity-pdfs';
@@ -26,6 +28,10 @@ export function measureFlow(
   const found = findPopulations(tracks, image, conditions, recipe);
   progress(0.3, 'velocities');
   const pdfs = velocityPdfs(tracks, found.population, conditions, recipe);
+  const motion = {
+    ...measureDispersion(tracks, found.population, conditions, recipe),
+    tails: velocityTails(tracks, found.population, conditions, recipe),
+  };
   progress(0.5, 'pairs');
   const pairs = findCandidates(tracks, found.population, image, conditions, recipe);
   progress(0.8, 'estimates');
@@ -47,6 +53,7 @@ export function measureFlow(
     },
     populations: found.summary,
     pdfs,
+    motion,
     pairs: pairs.summary,
     candidates: pairs.candidates,
     estimates,

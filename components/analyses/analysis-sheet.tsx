@@ -19,6 +19,7 @@ import type { PairSummary } from '@/tracking/flow-measures';
 import { CandidatesSection } from './candidates-section';
 import { DownloadsSection } from './downloads-section';
 import { EstimatesSection } from './estimates-section';
+import { MotionSection } from './motion-section';
 import { PdfSection } from './pdf-section';
 import { PopulationSection } from './population-section';
 import { ProgressPanel } from './progress-panel';
@@ -108,6 +109,7 @@ export function AnalysisSheet({
                   <>
                     <PopulationSection populations={data.populations} />
                     <PdfSection pdfs={data.pdfs} />
+                    <MotionSection motion={data.motion} />
                   </>
                 ) : null
               }

@@ -6,6 +6,7 @@ import { binMiddleMmS, densitySMm, labelBin, pdfBands, pdfPoints, pdfRanges } fr
 import type { PdfComponent, PdfPopulation, PdfSeries } from './pdf-series';
 import { Plot } from './plot';
 import { BandMark, DotMark, FloorMark, LabelMark, LineMark, NoiseMark } from './plot-marks';
+import { DRAWING_ORDER, POPULATION_LOOK } from './population-look';
 
 interface PdfPlotProps {
   series: readonly PdfSeries[];
@@ -19,14 +20,6 @@ interface PdfPlotProps {
   heightPx?: number;
 }
 
-// The strokes of the populations, as everywhere: beaded, plain, dashed.
-const LOOK: Record<PdfPopulation, { stroke: string; widthPx: number; dash?: string; beads: boolean }> = {
-  trapped: { stroke: 'var(--trapped)', widthPx: 1, beads: true },
-  free: { stroke: 'var(--free)', widthPx: 2.4, beads: false },
-  undecided: { stroke: 'var(--undecided)', widthPx: 1.4, dash: '5 4', beads: false },
-  all: { stroke: 'var(--ink)', widthPx: 1.2, beads: false },
-};
-const ORDER: readonly PdfPopulation[] = ['undecided', 'all', 'free', 'trapped'];
 type Place = { share: number; side: 'left' | 'right'; dxPx: number; dyPx: number };
 /** Labels apart from each other: how high up the flank they point, which side, and where from there. */
 const PLACES: Record<'log' | 'linear', Record<PdfPopulation, Place>> = {
@@ -58,7 +51,7 @@ export function PdfPlot({
   const log = scale === 'log';
   const ranges = pdfRanges(series, log, component);
   if (!ranges) return <EmptyState>No velocity was measured at this lag.</EmptyState>;
-  const drawn = ORDER.flatMap((population) => series.filter((one) => one.population === population));
+  const drawn = DRAWING_ORDER.flatMap((population) => series.filter((one) => one.population === population));
   const words = SUBSCRIPTS[component] ? undefined : component === 'speed' ? 'speed' : component;
   return (
     <ChartFrame label={label} fileName={fileName} table={pdfTable(series)}>
@@ -72,7 +65,7 @@ export function PdfPlot({
             <BandMark
               key={`${one.population} ${rows[0].x}`}
               rows={rows}
-              fill={LOOK[one.population].stroke}
+              fill={POPULATION_LOOK[one.population].stroke}
               opacity={one.population === 'undecided' ? 0.1 : 0.2}
             />
           )),
@@ -90,7 +83,7 @@ export function PdfPlot({
 }
 
 function Series({ one, log }: { one: PdfSeries; log: boolean }) {
-  const look = LOOK[one.population];
+  const look = POPULATION_LOOK[one.population];
   const points = pdfPoints(one.bins, log);
   return (
     <g>

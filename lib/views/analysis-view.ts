@@ -2,6 +2,7 @@ import { z } from 'zod';
 import { recipeRequestSchema } from '../schemas/recipe';
 import { ANALYSIS_STAGES } from '../analysis-facts';
 import { itemFields, personSchema } from './common';
+import { motionViewSchema } from './motion-view';
 
 const count = z.int();
 
@@ -161,6 +162,8 @@ export const measuresViewSchema = z.object({
       note: z.string(),
     }),
   ),
+  /** Null for an analysis that was measured before there was such a measure. */
+  motion: motionViewSchema.nullable(),
   spotsPerFrame: z.array(count),
 });
 export type MeasuresView = z.infer<typeof measuresViewSchema>;

@@ -2,6 +2,7 @@ import { LabError, notFound } from '@/lib/errors';
 import type { MeasuresView } from '@/lib/views/analysis-view';
 import type { VelocityPdf } from '@/tracking/velocity-pdf-shape';
 import { readMeasures, type StoredMeasures } from './analysis-outcome';
+import { motionView } from './motion-view';
 import { selectRow } from './select';
 
 interface State {
@@ -59,6 +60,7 @@ export async function measuresView(labId: string, analysisId: string): Promise<M
     populations: { ...measures.populations, pairs: measures.pairs },
     pdfs: measures.pdfs.map(pdfView),
     estimates: measures.estimates,
+    motion: measures.motion && motionView(measures.motion),
     spotsPerFrame: counts?.spots ?? [],
   };
 }

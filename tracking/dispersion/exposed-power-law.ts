@@ -6,9 +6,9 @@ export interface PowerLaw {
 
 const EXPONENT_LEAST = 0.05;
 const EXPONENT_MOST = 2.5;
-const BISECTIONS = 40;
-/** Golden section. */
-const GOLDEN = (Math.sqrt(5) - 1) / 2;
+/** Exponents that are tabulated; between them the squares are a parabola. */
+const EXPONENT_STEP = 0.01;
+const STEPS = Math.round((EXPONENT_MOST - EXPONENT_LEAST) / EXPONENT_STEP);
 
 /**
  * Mean squared displacement at a lag of positions that are averages over an exposure E, for a motion
@@ -27,42 +27,71 @@ export function exposedPower(lagS: number, exponent: number, exposureS: number):
   return (lagS ** exponent * bracket) / ((exponent + 1) * n * e * e);
 }
 
-/**
- * Weighted least squares of ln value on ln(scale * exposedPower), the exponent by golden section.
- * Values that are not positive take no part. Null with fewer than 3 lags.
- *
- * @param weight of ln value, e.g. one over its variance.
- */
-export function fitExposedPowerLaw(
+/** Fits power laws to values at the same lags again and again, as a bootstrap does. */
+export interface ExposedPowerLawFitter {
+  /**
+   * Weighted least squares of ln value on ln(scale * exposedPower). Values that are not positive take no
+   * part. Null with fewer than 3 lags.
+   *
+   * @param weight of ln value, e.g. one over its variance.
+   */
+  fit(value: ArrayLike<number>, weight: ArrayLike<number>): PowerLaw | null;
+}
+
+export function createExposedPowerLawFitter(
   lagS: ArrayLike<number>,
-  value: ArrayLike<number>,
-  weight: ArrayLike<number>,
   exposureS: number,
-): PowerLaw | null {
-  const used: number[] = [];
-  for (let k = 0; k < lagS.length; k++) if (value[k] > 0 && weight[k] > 0) used.push(k);
-  if (used.length < 3) return null;
-  const fitAt = (exponent: number) => {
-    let sum = 0;
-    let mean = 0;
-    const off = used.map((k) => Math.log(value[k]) - Math.log(exposedPower(lagS[k], exponent, exposureS)));
-    used.forEach((k, i) => {
-      sum += weight[k];
-      mean += weight[k] * off[i];
-    });
-    mean /= sum;
-    let squares = 0;
-    used.forEach((k, i) => (squares += weight[k] * (off[i] - mean) ** 2));
-    return { squares, scale: Math.exp(mean) };
-  };
-  let low = EXPONENT_LEAST;
-  let high = EXPONENT_MOST;
-  for (let i = 0; i < BISECTIONS; i++) {
-    const a = high - GOLDEN * (high - low);
-    const b = low + GOLDEN * (high - low);
-    if (fitAt(a).squares < fitAt(b).squares) high = b;
-    else low = a;
+): ExposedPowerLawFitter {
+  const lags = lagS.length;
+  const table = new Float64Array((STEPS + 1) * lags);
+  const exponentAt = (row: number) => EXPONENT_LEAST + row * EXPONENT_STEP;
+  for (let row = 0; row <= STEPS; row++) {
+    for (let k = 0; k < lags; k++) {
+      table[row * lags + k] = Math.log(exposedPower(lagS[k], exponentAt(row), exposureS));
+    }
   }
-  const exponent = 0.5 * (low + high);
-  return { scale: fitAt(exponent).scale, exponent };
+  const ln = new Float64Array(lags);
+  const w = new Float64Array(lags);
+
+  /** Weighted mean and sum of squares of ln value over the law of a row. */
+  const lnScaleAt = (row: number, sum: number) => {
+    let mean = 0;
+    for (let k = 0; k < lags; k++) mean += w[k] * (ln[k] - table[row * lags + k]);
+    return mean / sum;
+  };
+  const squaresAt = (row: number, sum: number) => {
+    const mean = lnScaleAt(row, sum);
+    let squares = 0;
+    for (let k = 0; k < lags; k++) squares += w[k] * (ln[k] - table[row * lags + k] - mean) ** 2;
+    return squares;
+  };
+
+  const fit = (value: ArrayLike<number>, weight: ArrayLike<number>): PowerLaw | null => {
+    let sum = 0;
+    let used = 0;
+    for (let k = 0; k < lags; k++) {
+      const takes = value[k] > 0 && weight[k] > 0;
+      ln[k] = takes ? Math.log(value[k]) : 0;
+      w[k] = takes ? weight[k] : 0;
+      sum += w[k];
+      if (takes) used++;
+    }
+    if (used < 3) return null;
+    let low = 0;
+    let high = STEPS;
+    while (high - low > 2) {
+      const middle = (low + high) >> 1;
+      if (squaresAt(middle, sum) < squaresAt(middle + 1, sum)) high = middle + 1;
+      else low = middle;
+    }
+    const row = Math.min(STEPS - 1, Math.max(1, low + 1));
+    const [before, at, after] = [squaresAt(row - 1, sum), squaresAt(row, sum), squaresAt(row + 1, sum)];
+    const bend = before - 2 * at + after;
+    const off = bend > 0 ? Math.min(1, Math.max(-1, (0.5 * (before - after)) / bend)) : 0;
+    const near = off < 0 ? row - 1 : row + 1;
+    const share = Math.abs(off);
+    const lnScale = (1 - share) * lnScaleAt(row, sum) + share * lnScaleAt(near, sum);
+    return { scale: Math.exp(lnScale), exponent: exponentAt(row) + off * EXPONENT_STEP };
+  };
+  return { fit };
 }

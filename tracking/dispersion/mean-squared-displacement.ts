@@ -3,7 +3,7 @@ import type { TrackPacks } from '../resampling/packs';
 import type { Tracks } from '../types';
 import type { PdfPopulation } from '../velocity-pdf-shape';
 import type { DispersionComponent, Interval, MeanSquaredDisplacement } from './dispersion-shape';
-import { fitExposedPowerLaw } from './exposed-power-law';
+import { createExposedPowerLawFitter } from './exposed-power-law';
 import type { TrackPaths } from './track-paths';
 
 /** Which tracks, at which lags, seen how. */
@@ -108,12 +108,13 @@ function exponentOf(ratios: RatioDraws, lagS: readonly number[], exposureS: numb
     if (n < 0.9 * rows || n < 2) return 0;
     return 1 / Math.max(LN_VARIANCE_LEAST, squares / n - (sum / n) ** 2);
   });
-  const law = fitExposedPowerLaw(lagS, value, weight, exposureS);
+  const fitter = createExposedPowerLawFitter(lagS, exposureS);
+  const law = fitter.fit(value, weight);
   if (!law) return null;
   const exponents = new Float64Array(rows).fill(Number.NaN);
   for (let d = 0; d < rows; d++) {
     const row = draws.subarray(d * columns, d * columns + lagS.length);
-    exponents[d] = fitExposedPowerLaw(lagS, row, weight, exposureS)?.exponent ?? Number.NaN;
+    exponents[d] = fitter.fit(row, weight)?.exponent ?? Number.NaN;
   }
   const band = percentileBand(exponents, 1, 0);
   return { value: law.exponent, low: band?.low ?? null, high: band?.high ?? null };

@@ -3,7 +3,7 @@ import type { PdfPopulation, VelocityComponent } from '../velocity-pdf-shape';
 import { POPULATIONS, type Conditions, type Recipe, type Tracks } from '../types';
 import { unitFlow } from '../velocities';
 import { compareDensities, type LikelihoodRatio } from './likelihood-ratio';
-import { fitPowerLawTail, type PowerLawTail } from './power-law-tail';
+import { fitPowerLawTail } from './power-law-tail';
 import { fitGaussianTail, fitLogNormalTail, powerLawDensity } from './tail-alternatives';
 import { tailSamples, type TailSamples } from './tail-samples';
 import { tailError } from './tail-error';
@@ -38,6 +38,8 @@ export interface VelocityTail {
 /** A tail begins this many noise widths out at least (common practice, no source). */
 const NOISE_WIDTHS = 5;
 const DOUBT = 0.05;
+/** A law that holds over a smaller range of sizes can't be told from others (common practice, no source). */
+const RANGE_LEAST = 3;
 const NOISE_SAMPLES = 1000;
 
 /**
@@ -123,20 +125,19 @@ function describe(sizes: TailSamples, floorMS: number): Described {
     fromMS,
     gaussian,
     logNormal,
-    verdict: judge(tail, error.fits, gaussian, logNormal),
+    verdict: judge(sizeMS[0] / tail.fromMS > RANGE_LEAST, error.fits, gaussian, logNormal),
   };
 }
 
 function judge(
-  { alpha }: PowerLawTail,
+  wide: boolean,
   fits: boolean,
   gaussian: LikelihoodRatio,
   logNormal: LikelihoodRatio,
 ): TailVerdict {
-  if (!Number.isFinite(alpha)) return 'the data cannot tell';
   if (gaussian.pEqual < DOUBT && gaussian.lnRatio < 0) return 'Gaussian';
   if (logNormal.pEqual < DOUBT && logNormal.lnRatio < 0) return 'log-normal';
-  return fits && gaussian.pEqual < DOUBT ? 'power law' : 'the data cannot tell';
+  return wide && fits && gaussian.pEqual < DOUBT ? 'power law' : 'the data cannot tell';
 }
 
 function noiseWidth(

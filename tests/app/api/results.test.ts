@@ -200,6 +200,13 @@ describe('lists of results', () => {
     const view = views.measuresViewSchema.parse(body);
     expect(view.spotsPerFrame).toEqual([3, 4]);
     expect(view.pdfs).toHaveLength(measures.pdfs.length);
+    const { displacements, autocorrelations, tails } = measures.motion;
+    expect(view.motion?.displacements.map(({ value_m2 }) => value_m2)).toEqual(
+      displacements.map(({ valueM2 }) => valueM2),
+    );
+    expect(view.motion?.autocorrelations).toHaveLength(autocorrelations.length);
+    expect(view.motion?.tails.map(({ verdict }) => verdict)).toEqual(tails.map(({ verdict }) => verdict));
+    expect(tails.length).toBeGreaterThan(0);
     const { body: list } = await get<ListView<unknown>>('/candidates?limit=200');
     const candidates = list.items.map((item) => views.candidateViewSchema.parse(item));
     expect(candidates.map(({ event, trackA }) => [event, trackA])).toEqual(

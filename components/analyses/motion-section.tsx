@@ -1,0 +1,125 @@
+'use client';
+
+import { useState } from 'react';
+import { CurvePlot } from '@/components/charts/curve-plot';
+import { Segment } from '@/components/ui/choice';
+import { EmptyState } from '@/components/ui/page-states';
+import { Section } from '@/components/ui/sheet';
+import type { MotionView } from '@/lib/views/motion-view';
+import {
+  logRanges,
+  memoryCurve,
+  memoryRanges,
+  motionComponents,
+  spreadCurve,
+  toldApart,
+} from './motion-curves';
+import { TailTable } from './tail-table';
+
+const ASPECTS = [
+  { value: 'spread', label: 'spreading' },
+  { value: 'memory', label: 'memory' },
+  { value: 'tails', label: 'tails' },
+] as const;
+type Aspect = (typeof ASPECTS)[number]['value'];
+
+const LAG = { words: 'lag', unit: 'ms' };
+
+/** How tracers spread, how long they remember their velocity, and how the tails of velocities fall. */
+export function MotionSection({ motion }: { motion: MotionView | null }) {
+  const [aspect, setAspect] = useState<Aspect>('spread');
+  const [wanted, setWanted] = useState<string | null>(null);
+  if (!motion) {
+    return (
+      <Section title="Motion">
+        <EmptyState>This analysis is older than these measures; a new one has them.</EmptyState>
+      </Section>
+    );
+  }
+  const measured = { spread: motion.displacements, memory: motion.autocorrelations, tails: motion.tails }[
+    aspect
+  ];
+  const components = motionComponents(measured);
+  const component = components.find((name) => name === wanted) ?? components[0];
+  const at = <T extends { component: string }>(list: readonly T[]) =>
+    list.filter((one) => one.component === component);
+  return (
+    <Section
+      title="Motion"
+      tools={<Segment label="Aspect of motion" options={ASPECTS} value={aspect} onChange={setAspect} />}
+    >
+      {component === undefined ? (
+        <EmptyState>No track is long enough for a velocity.</EmptyState>
+      ) : (
+        <>
+          <div className="py-2">
+            <Segment
+              label="Component of motion"
+              options={components.map((name) => ({ value: name, label: name }))}
+              value={component}
+              onChange={setWanted}
+            />
+          </div>
+          {aspect === 'spread' ? (
+            <Spread list={toldApart(at(motion.displacements))} component={component} />
+          ) : null}
+          {aspect === 'memory' ? (
+            <Memory list={toldApart(at(motion.autocorrelations))} component={component} />
+          ) : null}
+          {aspect === 'tails' ? <TailTable tails={toldApart(at(motion.tails))} /> : null}
+        </>
+      )}
+    </Section>
+  );
+}
+
+function Spread({ list, component }: { list: MotionView['displacements']; component: string }) {
+  const curves = list.map(spreadCurve);
+  const ranges = logRanges(curves);
+  if (!ranges) return <EmptyState>Nothing moved by more than its localization noise.</EmptyState>;
+  return (
+    <>
+      <CurvePlot
+        curves={curves}
+        x={{ ...ranges.x, title: LAG }}
+        y={{ ...ranges.y, title: { words: 'mean squared displacement', unit: 'µm^2' } }}
+        label={sentence('Mean squared displacement', component, curves)}
+        fileName={`spreading-${component}`}
+      />
+      <p className="text-note text-ink-2">
+        Localization noise is subtracted; exponents allow for the open shutter. 1 is diffusion, 2 straight
+        motion.
+      </p>
+    </>
+  );
+}
+
+function Memory({ list, component }: { list: MotionView['autocorrelations']; component: string }) {
+  const curves = list.map(memoryCurve);
+  if (curves.length === 0) return <EmptyState>No track is long enough to compare velocities.</EmptyState>;
+  const ranges = memoryRanges(curves);
+  return (
+    <>
+      <CurvePlot
+        curves={curves}
+        x={{ ...ranges.x, title: LAG }}
+        y={{ ...ranges.y, title: { words: 'velocity autocorrelation', unit: '' } }}
+        level={0}
+        label={sentence('Velocity autocorrelation', component, curves)}
+        fileName={`memory-${component}`}
+      />
+      <p className="text-note text-ink-2">
+        About the mean velocity of the population, localization noise taken out of the first two points.
+      </p>
+    </>
+  );
+}
+
+const sentence = (
+  what: string,
+  component: string,
+  curves: readonly { population: string; finding?: string }[],
+) =>
+  `${what} against lag, component ${component}: ${curves
+    .map(({ population, finding }) => (finding ? `${population}, ${finding}` : population))
+    .join('; ')}.`;

@@ -1,0 +1,104 @@
+'use client';
+
+import type { AxisRange } from './axis-ticks';
+import { ChartFrame } from './chart-frame';
+import { Plot } from './plot';
+import { BandMark, DotMark, LabelMark, LineMark, type PlotPoint } from './plot-marks';
+import type { AxisTitle } from './plot-text';
+import { DRAWING_ORDER, POPULATION_LOOK, type PlottedPopulation } from './population-look';
+
+/** One curve in printed units with its 95 % band. */
+export interface Curve {
+  population: PlottedPopulation;
+  points: readonly (PlotPoint & { low: number | null; high: number | null })[];
+  /** A quiet second line under the population's name. */
+  finding?: string;
+}
+
+interface CurvePlotProps {
+  curves: readonly Curve[];
+  x: AxisRange & { title: AxisTitle };
+  y: AxisRange & { title: AxisTitle };
+  /** A level that curves are compared with. */
+  level?: number;
+  label: string;
+  fileName: string;
+}
+
+/** Where along a curve its name points, so that names of several curves stay apart. */
+const NAMED_AT: Record<PlottedPopulation, number> = { trapped: 0.78, free: 0.5, all: 0.5, undecided: 0.25 };
+const HEIGHT_PX = 300;
+
+/** A quantity against the lag for each population, drawn in the population's stroke. */
+export function CurvePlot({ curves, x, y, level, label, fileName }: CurvePlotProps) {
+  const drawn = DRAWING_ORDER.flatMap((name) => curves.filter(({ population }) => population === name));
+  return (
+    <ChartFrame label={label} fileName={fileName} table={curveTable(drawn, x.title, y.title)}>
+      <Plot heightPx={HEIGHT_PX} x={x} y={y}>
+        {level === undefined ? null : (
+          <LineMark
+            points={[
+              { x: x.min, y: level },
+              { x: x.max, y: level },
+            ]}
+            stroke="var(--ink-3)"
+            dash="2 4"
+          />
+        )}
+        {drawn.map(({ population, points }) => (
+          <BandMark
+            key={`band ${population}`}
+            rows={points.flatMap(({ x: at, low, high }) =>
+              low === null || high === null ? [] : [{ x: at, low, high }],
+            )}
+            fill={POPULATION_LOOK[population].stroke}
+            opacity={population === 'undecided' ? 0.1 : 0.2}
+          />
+        ))}
+        {drawn.map(({ population, points }) => {
+          const { stroke, widthPx, dash, beads } = POPULATION_LOOK[population];
+          return (
+            <g key={population}>
+              <LineMark points={points} stroke={stroke} widthPx={widthPx} dash={dash} />
+              {beads ? (
+                <DotMark points={points.map(({ x: at, y: value }) => ({ x: at, y: value }))} fill={stroke} />
+              ) : null}
+            </g>
+          );
+        })}
+        {drawn.map((curve, place) => {
+          const shown = curve.points.filter((point) => point.y !== null);
+          const at = shown[Math.floor(NAMED_AT[curve.population] * (shown.length - 1))];
+          return at ? (
+            <LabelMark
+              key={curve.population}
+              x={at.x}
+              y={at.y ?? 0}
+              dxPx={place % 2 === 0 ? 18 : -18}
+              dyPx={place % 2 === 0 ? 30 : -26}
+              words={curve.population}
+              note={curve.finding}
+            />
+          ) : null;
+        })}
+      </Plot>
+    </ChartFrame>
+  );
+}
+
+const nameOf = ({ symbol, words }: AxisTitle) => words ?? symbol ?? '';
+
+function curveTable(curves: readonly Curve[], x: AxisTitle, y: AxisTitle) {
+  return {
+    columns: [
+      { name: 'population' },
+      { name: nameOf(x), unit: x.unit },
+      { name: nameOf(y), unit: y.unit },
+      { name: 'low, 95 %', unit: y.unit },
+      { name: 'high, 95 %', unit: y.unit },
+    ],
+    rows: curves.flatMap(({ population, points }) =>
+      points.map(({ x: at, y: value, low, high }) => [population, at, value, low, high]),
+    ),
+  };
+}
