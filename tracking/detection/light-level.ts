@@ -1,3 +1,5 @@
+import { nthElement } from '../image-model/nth-element';
+
 /** About so many pixels are looked at, evenly spread. */
 const SAMPLES = 20_000;
 const CLIP_SIGMAS = 2.5;
@@ -11,6 +13,27 @@ export interface LightLevel {
   shift: number;
 }
 
+/** Pixels from one that is looked at to the next: odd, so that columns take turns. */
+export const lightStride = (pixels: number): number => Math.max(1, Math.floor(pixels / SAMPLES)) | 1;
+
+/** Pixels of a frame that are looked at, one after the other, because every round goes over all of them. */
+export interface LightSamples {
+  count: number;
+  electrons: Float32Array;
+  background: Float32Array;
+}
+
+/** Sums over the samples that lie within `clip` variances of scale * background + shift. */
+export type LightSums = (
+  scale: number,
+  shift: number,
+  readVariance: number,
+  clip: number,
+) => { light: number; expected: number; kept: number };
+
+const room: LightSamples = { count: 0, electrons: new Float32Array(0), background: new Float32Array(0) };
+let ratios = new Float64Array(0);
+
 /**
  * Light of one frame relative to the whole stack's background, from the pixels that no spot
  * stands on: the mean of what lies within 2.5 noise widths, found in a few rounds.
@@ -21,52 +44,63 @@ export function measureLightLevel(
   usable: Uint8Array,
   readVariance: number,
 ): LightLevel {
-  // Odd, so that columns take turns.
-  const stride = Math.max(1, Math.floor(background.length / SAMPLES)) | 1;
-  let mean = 0;
-  let looked = 0;
+  const stride = lightStride(background.length);
+  const most = Math.ceil(background.length / stride);
+  if (room.electrons.length < most) {
+    room.electrons = new Float32Array(most);
+    room.background = new Float32Array(most);
+  }
+  room.count = 0;
   for (let i = 0; i < background.length; i += stride) {
     if (usable[i] === 0) continue;
-    mean += background[i];
-    looked++;
+    room.electrons[room.count] = electrons[i];
+    room.background[room.count++] = background[i];
   }
-  if (looked === 0) return { scale: 1, shift: 0 };
-  const scaling = mean / looked > BACKGROUND_LEAST_E;
-  let scale = scaling ? Math.max(0.01, medianRatio(electrons, background, usable, 7 * stride)) : 1;
+  return levelOfSamples(room, readVariance, sumRoom);
+}
+
+const sumRoom: LightSums = (scale, shift, readVariance, clip) => {
+  const { count, electrons, background } = room;
+  let light = 0;
+  let expected = 0;
+  let kept = 0;
+  for (let k = 0; k < count; k++) {
+    const level = scale * background[k] + shift;
+    const off = electrons[k] - level;
+    if (off * off > clip * (Math.max(0, level) + readVariance)) continue;
+    light += electrons[k];
+    expected += background[k];
+    kept++;
+  }
+  return { light, expected, kept };
+};
+
+/** Light level of samples; `sums` goes over them. */
+export function levelOfSamples(samples: LightSamples, readVariance: number, sums: LightSums): LightLevel {
+  const { count, background } = samples;
+  if (count === 0) return { scale: 1, shift: 0 };
+  let mean = 0;
+  for (let k = 0; k < count; k++) mean += background[k];
+  const scaling = mean / count > BACKGROUND_LEAST_E;
+  let scale = scaling ? Math.max(0.01, medianRatio(samples)) : 1;
   let shift = 0;
   for (let round = 0; round < ROUNDS; round++) {
-    let sum = 0;
-    let expected = 0;
-    let kept = 0;
-    for (let i = 0; i < background.length; i += stride) {
-      if (usable[i] === 0) continue;
-      const level = scale * background[i] + shift;
-      const off = electrons[i] - level;
-      const variance = Math.max(0, level) + readVariance;
-      if (off * off > CLIP_SIGMAS * CLIP_SIGMAS * variance) continue;
-      sum += electrons[i];
-      expected += background[i];
-      kept++;
-    }
+    const { light, expected, kept } = sums(scale, shift, readVariance, CLIP_SIGMAS * CLIP_SIGMAS);
     if (kept === 0 || !(expected > 0 || !scaling)) break;
-    if (scaling) scale = Math.max(0.01, sum / expected);
-    else shift = (sum - expected) / kept;
+    const [lastScale, lastShift] = [scale, shift];
+    if (scaling) scale = Math.max(0.01, light / expected);
+    else shift = (light - expected) / kept;
+    if (scale === lastScale && shift === lastShift) break;
   }
   return { scale, shift };
 }
 
-function medianRatio(
-  electrons: Float32Array,
-  background: Float32Array,
-  usable: Uint8Array,
-  stride: number,
-): number {
-  const ratios = new Float32Array(Math.ceil(background.length / stride));
-  let count = 0;
-  for (let i = 0; i < background.length; i += stride) {
-    if (usable[i] === 1 && background[i] > 0) ratios[count++] = electrons[i] / background[i];
+/** Median of electrons over background, from every seventh sample. */
+function medianRatio({ count, electrons, background }: LightSamples): number {
+  if (ratios.length < count / 7 + 1) ratios = new Float64Array(Math.ceil(count / 7) + 1);
+  let found = 0;
+  for (let k = 0; k < count; k += 7) {
+    if (background[k] > 0) ratios[found++] = electrons[k] / background[k];
   }
-  if (count === 0) return 1;
-  const sorted = ratios.subarray(0, count).sort();
-  return sorted[count >> 1];
+  return found === 0 ? 1 : nthElement(ratios, found, found >> 1);
 }

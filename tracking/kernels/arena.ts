@@ -44,6 +44,10 @@ export class Arena {
     return new Float32Array(this.memory.buffer, at, length);
   }
 
+  doubles(at: number, length: number): Float64Array {
+    return new Float64Array(this.memory.buffer, at, length);
+  }
+
   integers(at: number, length: number): Int32Array {
     return new Int32Array(this.memory.buffer, at, length);
   }

@@ -1,3 +1,4 @@
+import type { LightLevel } from '../detection/light-level';
 import type { SpotKernel } from '../detection/spot-kernel';
 import type { SimdExports } from './simd-exports';
 
@@ -64,11 +65,13 @@ export interface FrameKernels extends FramePlanes {
   readonly compiled: CompiledPlanes | null;
   /** Fills `electrons` and `usable`. Pixels that are bad or hold no finite number get 0 electrons. */
   toElectrons(counts: Float32Array, scale: CountScale): void;
+  /** Light of the frame relative to `background`; see `measureLightLevel`. */
+  lightLevel(readVariance: number): LightLevel;
   /**
    * Fills `bare`, max(0, scale * background + shift), and `model`; then `response`, the frame in units of
    * its own noise correlated with the spot. Bad pixels count as dark, saturated ones as bright as they look.
    */
-  respond(light: { scale: number; shift: number }, readVariance: number): void;
+  respond(light: LightLevel, readVariance: number): void;
   /**
    * Pixels of `response` from `level` on that none of their eight neighbours exceeds; of equal neighbours
    * the first in reading order counts.

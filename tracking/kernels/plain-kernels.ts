@@ -1,3 +1,4 @@
+import { measureLightLevel } from '../detection/light-level';
 import { createMatchedFilter, findPeaks } from '../detection/matched-filter';
 import { DARK_VARIANCE_E2 } from '../detection/second-look';
 import type { FrameKernels, ImageSpec, Kernels, Peaks } from './kernels';
@@ -64,6 +65,7 @@ function forImages({ width, height, spotSigmaPx }: ImageSpec): FrameKernels {
     model,
     response,
     toElectrons,
+    lightLevel: (readVariance) => measureLightLevel(electrons, background, usable, readVariance),
     respond,
     findPeaks: find,
   };

@@ -50,6 +50,25 @@ export interface SimdExports {
     pixels: number,
   ): void;
   findPeaks(response: number, width: number, height: number, level: number, peaks: number): number;
+  gatherLight(
+    electrons: number,
+    background: number,
+    usable: number,
+    pixels: number,
+    stride: number,
+    electronsOut: number,
+    backgroundOut: number,
+  ): number;
+  lightSums(
+    electrons: number,
+    background: number,
+    count: number,
+    scale: number,
+    shift: number,
+    readVariance: number,
+    clip: number,
+    sums: number,
+  ): void;
 }
 
 /** Makes an instance with a memory of its own. */

@@ -5,6 +5,7 @@ import type { FrameKernels, ImageSpec, Kernels, Peaks } from './kernels';
 import { saturationElectrons } from './noise-units';
 import { plainKernels } from './plain-kernels';
 import type { InstantiateSimd } from './simd-exports';
+import { createSimdLight } from './simd-light';
 import { reservePlanes } from './simd-planes';
 
 /**
@@ -136,6 +137,7 @@ function simdImages(spec: ImageSpec, instantiate: InstantiateSimd): FrameKernels
     model: arena.floats(at.model, pixels),
     response,
     toElectrons,
+    lightLevel: createSimdLight(simd, arena, at, pixels),
     respond,
     findPeaks,
   };

@@ -1,3 +1,4 @@
+import { lightStride } from '../detection/light-level';
 import type { Arena } from './arena';
 
 /** Kernels work on 16 pixels at a time and may write so many bytes behind a plane's last pixel. */
@@ -18,6 +19,12 @@ export interface SimdPlanes {
   /** i32, room for a peak in every block of 2 x 2 pixels, which is as many as there can be. */
   peaks: number;
   peaksMost: number;
+  /** f32, packed samples of the light; see `lightStride`. */
+  lightElectrons: number;
+  lightBackground: number;
+  lightMost: number;
+  /** f64, three sums over them. */
+  lightSums: number;
   /** f32 at distance 0 .. reach. */
   weights: number;
   /** f32 factor per column of the response. */
@@ -47,6 +54,7 @@ export function reservePlanes(
   const paddedWidth = Math.ceil(width / 16) * 16;
   const noiseLength = paddedWidth + 2 * reach;
   const peaksMost = Math.ceil(width / 2) * Math.ceil(height / 2);
+  const lightMost = Math.ceil(pixels / lightStride(pixels));
   const bandRows = Math.min(BAND_ROWS, height);
   return {
     bad: bytes(pixels),
@@ -58,6 +66,10 @@ export function reservePlanes(
     response: floats(pixels),
     peaks: floats(peaksMost),
     peaksMost,
+    lightElectrons: floats(lightMost),
+    lightBackground: floats(lightMost),
+    lightMost,
+    lightSums: floats(6),
     weights: floats(reach + 1),
     correctionX: floats(paddedWidth),
     noise: floats(noiseLength),

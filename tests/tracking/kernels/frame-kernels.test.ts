@@ -2,6 +2,7 @@ import { describe, expect, test } from 'vitest';
 import type { CountScale, FrameKernels, Kernels } from '@/tracking/kernels/kernels';
 import { plainKernels } from '@/tracking/kernels/plain-kernels';
 import { createRandom } from '@/tracking/random';
+import { expectWithin } from '@/tests/helpers/expect-within';
 import { simdKernels } from '@/tests/helpers/simd-kernels';
 
 // The plain kernels are the oracle of the compiled ones; their own filter and peaks are held against slow
@@ -120,6 +121,23 @@ const peaksOf = (frame: FrameKernels, level: number): number[] => {
   const { at, count } = frame.findPeaks(level);
   return [...at.subarray(0, count)];
 };
+
+test.each([
+  [1, 1],
+  [9, 5],
+  [150, 141],
+  [301, 223],
+])('the light level of a frame of %d x %d px is the same with both sets', (width, height) => {
+  for (const seed of [1, 2, 3]) {
+    const [a, b] = [plainKernels, simd].map((k) => prepared(k, width, height, seed, 1.2));
+    for (const level of [1, 0]) {
+      for (const frame of [a, b]) frame.background.forEach((_, i) => (frame.background[i] *= level));
+      // Sums in 64 bits in another order.
+      expectWithin(b.lightLevel(2.25).scale, a.lightLevel(2.25).scale, { rel: 1e-12 });
+      expectWithin(b.lightLevel(2.25).shift, a.lightLevel(2.25).shift, { abs: 1e-11 });
+    }
+  }
+});
 
 test('every block of 2 x 2 pixels can hold a peak', () => {
   const [width, height] = [37, 21];

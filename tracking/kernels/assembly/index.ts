@@ -3,6 +3,7 @@
 
 export { correlateColumns, correlateRow } from './correlate';
 export { findPeaks } from './find-peaks';
+export { gatherLight, lightSums } from './light-sums';
 export { noiseRow } from './noise-row';
 export { toElectrons } from './to-electrons';
 
