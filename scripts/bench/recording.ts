@@ -1,11 +1,12 @@
-import { open } from 'node:fs/promises';
+import { closeSync, openSync, writeSync } from 'node:fs';
 import { writeTiff } from '@/jobs/demo/write-tiff';
+import { MIXED_SIZES, mixedCamera, mixedScene, type MixedSet } from '@/tracking/simulate/mixed-scene';
 import { createRenderer } from '@/tracking/simulate/render';
 import type { Scene, SceneCamera } from '@/tracking/simulate/scene';
-import { standardCamera, standardScene } from '@/tracking/simulate/standard-scene';
 
 /** A simulated recording on disk, twice: for the product and for the reference. */
 export interface BenchRecording {
+  name: string;
   scene: Scene;
   camera: SceneCamera;
   width: number;
@@ -17,31 +18,35 @@ export interface BenchRecording {
   rawPath: string;
 }
 
-/** Renders the standard recording: 512 x 512 px, about 300 tracers in sight. */
+export interface BenchRecordingOptions {
+  set: MixedSet;
+  seed: number;
+  /** Fewer frames than the set has, for a short bench. */
+  frames?: number;
+}
+
+/** Renders a recording of tracers of mixed brightness, frame by frame. */
 export async function makeRecording(
   folder: string,
-  options: { snr: number; seed: number; frames: number },
+  { set, seed, frames = MIXED_SIZES[set].frames }: BenchRecordingOptions,
 ): Promise<BenchRecording> {
-  const scene = standardScene(options);
-  const camera = standardCamera(options.seed);
+  const scene = mixedScene({ set, seed, frames });
+  const camera = mixedCamera(seed);
   const renderer = createRenderer(scene, camera);
-  const { widthPx: width, heightPx: height, frames } = scene;
-  const tiffPath = `${folder}/standard.tif`;
-  const rawPath = `${folder}/standard.u16`;
-  const raw = await open(rawPath, 'w');
-  const all = Array.from({ length: frames }, (_, index) => renderer.renderFrame(index));
-  for (const counts of all)
-    await raw.write(new Uint8Array(counts.buffer, counts.byteOffset, counts.byteLength));
-  await raw.close();
-  await writeTiff(tiffPath, { width, height, frames, frame: (index) => all[index] });
-  return {
-    scene,
-    camera,
-    width,
-    height,
-    frames,
-    megapixels: (frames * width * height) / 1e6,
-    tiffPath,
-    rawPath,
-  };
+  const { widthPx: width, heightPx: height } = scene;
+  const tiffPath = `${folder}/${set}.tif`;
+  const rawPath = `${folder}/${set}.u16`;
+  const raw = openSync(rawPath, 'w');
+  try {
+    const frame = (index: number) => {
+      const counts = renderer.renderFrame(index);
+      writeSync(raw, new Uint8Array(counts.buffer, counts.byteOffset, counts.byteLength));
+      return counts;
+    };
+    await writeTiff(tiffPath, { width, height, frames, frame });
+  } finally {
+    closeSync(raw);
+  }
+  const megapixels = (frames * width * height) / 1e6;
+  return { name: set, scene, camera, width, height, frames, megapixels, tiffPath, rawPath };
 }

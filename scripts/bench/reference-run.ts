@@ -6,9 +6,11 @@ import { rootDir } from '@/lib/env';
 import type { PipelineRun } from './pipeline-run';
 import type { BenchRecording } from './recording';
 
+/** The library on every pixel, or with what somebody who measures would leave out; see the script. */
+export type ReferenceMode = 'plain' | 'tuned';
+
 interface ReferenceReport {
   scipy: string;
-  numpy: string;
   seconds: Record<'reading' | 'filter' | 'maxima' | 'fits' | 'linking', number>;
   spots: number;
   links: number;
@@ -22,18 +24,19 @@ const COLUMNS = 4;
 /** Runs the script on SciPy over the raw frames. */
 export async function runReference(
   python: string,
+  mode: ReferenceMode,
   recording: BenchRecording,
   folder: string,
 ): Promise<PipelineRun> {
   const pointsPath = join(folder, 'reference.f64');
   const { rawPath, width, height, frames } = recording;
   const script = join(rootDir(), 'scripts', 'bench', 'reference.py');
-  const args = ['-B', script, rawPath, width, height, frames, pointsPath].map(String);
+  const args = ['-B', script, mode, rawPath, width, height, frames, pointsPath].map(String);
   const { stdout } = await promisify(execFile)(python, args, { env: { ...process.env, ...ONE_THREAD } });
-  const { scipy, numpy, seconds, spots, links, peakMB } = JSON.parse(stdout) as ReferenceReport;
+  const { scipy, seconds, spots, links, peakMB } = JSON.parse(stdout) as ReferenceReport;
   const detection = seconds.filter + seconds.maxima + seconds.fits;
   return {
-    name: `SciPy ${scipy}, NumPy ${numpy}`,
+    name: mode === 'plain' ? `SciPy ${scipy}` : 'SciPy, tuned',
     seconds: {
       reading: seconds.reading,
       measuring: 0,
