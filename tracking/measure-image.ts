@@ -1,25 +1,32 @@
+import { fitBackground } from './image-model/background-nodes';
 import { findBadPixels } from './image-model/bad-pixels';
+import { interpolateBlocks } from './image-model/block-grid';
+import { blockStatistics } from './image-model/block-statistics';
+import { electronFrames } from './image-model/electron-frames';
 import { measureCameraNoise } from './image-model/photon-transfer';
 import { findQuietPixels } from './image-model/quiet-pixels';
 import { findSaturation } from './image-model/saturation';
-import { measureSpotSigma } from './image-model/spot-size';
-import { measureLightLevel } from './detection/light-level';
+import { measureSpotSize } from './image-model/spot-size';
 import type { Frame, ImageModel, RecipeRequest } from './types';
 
-/** Frames that the image model is measured from, and the most pixels that they may hold together. */
+/** Frames that the image model is measured from. */
 const MODEL_FRAMES = 32;
+/** Statistics of so many pixels are plenty, if they come from this many frames at least. */
+const MODEL_PIXELS_WANTED = 17_000_000;
+const MODEL_FRAMES_WANTED = 8;
+/** The most pixels that the frames may hold together, for the sake of memory. */
 const MODEL_PIXELS_MOST = 120_000_000;
-/** Frames of those in which the size of spots is measured. */
-const SPOT_SIZE_FRAMES = 8;
 
 /**
  * Frames to measure the image model from: pairs of neighbours spread evenly over the recording,
  * in order. Their number depends on the recording alone, so every worker picks the same.
  *
- * @param pixelsPerFrame fewer pairs are picked of very large frames, for the sake of memory.
+ * @param pixelsPerFrame fewer pairs are picked of large frames, for the sake of time and memory.
  */
 export function pickModelFrames(frameCount: number, pixelsPerFrame = 1): number[] {
-  const most = Math.max(2, Math.min(MODEL_FRAMES, Math.floor(MODEL_PIXELS_MOST / pixelsPerFrame)));
+  const wanted = Math.max(MODEL_FRAMES_WANTED, Math.floor(MODEL_PIXELS_WANTED / pixelsPerFrame));
+  const allowed = Math.floor(MODEL_PIXELS_MOST / pixelsPerFrame);
+  const most = Math.max(2, Math.min(MODEL_FRAMES, wanted, allowed));
   if (frameCount <= most) return Array.from({ length: frameCount }, (_, i) => i);
   const pairs = Math.floor(most / 2);
   const picked: number[] = [];
@@ -32,13 +39,55 @@ export function pickModelFrames(frameCount: number, pixelsPerFrame = 1): number[
 
 /**
  * What camera and tracers look like: gain, offset and read noise by photon transfer, background
- * without tracers, bad pixels, saturation, size of a tracer's image. Values that the request gives
- * are taken from it.
+ * without tracers and how it drifts, bad pixels, saturation, size of a tracer's image. Values that
+ * the request gives are taken from it.
  *
  * @param frames those of `pickModelFrames`, in that order.
+ * @param frameNumbers what `pickModelFrames` returned; without them a drift of the background can't
+ *   be placed in time and its mean has to do.
  * @throws RangeError for no frames or frames of different sizes.
  */
-export function measureImage(frames: readonly Frame[], request: RecipeRequest): ImageModel {
+export function measureImage(
+  frames: readonly Frame[],
+  request: RecipeRequest,
+  frameNumbers: readonly number[] | null = null,
+): ImageModel {
+  checkFrames(frames, frameNumbers);
+  const { width, height } = frames[0];
+  const quietPixels = findQuietPixels(frames);
+  const statistics = blockStatistics(quietPixels);
+  const camera = measureCameraNoise(quietPixels, statistics, request);
+  const { meanE, drift } = fitBackground(statistics, camera, frameNumbers && pairNumbers(frameNumbers));
+  const backgroundE = interpolateBlocks(meanE, statistics.grid);
+  for (let i = 0; i < backgroundE.length; i++) if (backgroundE[i] < 0) backgroundE[i] = 0;
+  const { sums, level } = quietPixels;
+  const pixelVariances = pixelVariance(backgroundE, camera);
+  const badPixels = findBadPixels(sums, pixelVariances, statistics.pairs, frames.length, width, height);
+  const middle = (height >> 1) * width + (width >> 1);
+  const model: ImageModel = {
+    width,
+    height,
+    ...camera,
+    spotSigmaPx: Number.NaN,
+    saturationCounts: findSaturation(
+      frames,
+      sums.highest,
+      sums.highestPixels,
+      level[middle],
+      pixelVariances[middle],
+    ),
+    badPixels,
+    backgroundE,
+    backgroundDrift: drift,
+  };
+  const spots = electronFrames(frames, frameNumbers, model);
+  const size = measureSpotSize(spots, width, height, camera.readNoiseE ** 2);
+  model.spotSigmaPx = typeof request.spotSizePx === 'number' ? request.spotSizePx : size.sigmaPx;
+  model.spotSigmaSpreadPx = size.spreadPx;
+  return model;
+}
+
+function checkFrames(frames: readonly Frame[], frameNumbers: readonly number[] | null): void {
   if (frames.length === 0) throw new RangeError('An image model needs at least one frame. Received 0.');
   const { width, height } = frames[0];
   for (const frame of frames) {
@@ -48,42 +97,28 @@ export function measureImage(frames: readonly Frame[], request: RecipeRequest): 
       );
     }
   }
-  const quietPixels = findQuietPixels(frames);
-  const camera = measureCameraNoise(frames, quietPixels, request);
-  const { gainCountsPerE: gain, offsetCounts: offset, readNoiseE } = camera;
-  const readVariance = readNoiseE * readNoiseE;
-  const backgroundE = quietPixels.level.map((level) => Math.max(0, (level - offset) / gain));
-  const varianceOf = (at: number) => gain * gain * (backgroundE[at] + readVariance) + 1e-12;
-  const badPixels = findBadPixels(frames, quietPixels.level, varianceOf);
-  const middle = (height >> 1) * width + (width >> 1);
-  const saturationCounts = findSaturation(frames, quietPixels.level[middle], varianceOf(middle));
-  const given = typeof request.spotSizePx === 'number' ? request.spotSizePx : undefined;
-  return {
-    width,
-    height,
-    ...camera,
-    spotSigmaPx: given ?? spotSigma(),
-    saturationCounts,
-    badPixels,
-    backgroundE,
-  };
-
-  function spotSigma(): number {
-    const step = Math.max(1, Math.floor(frames.length / SPOT_SIZE_FRAMES));
-    const chosen = frames.filter((_, i) => i % step === 0).slice(0, SPOT_SIZE_FRAMES);
-    const inElectrons = chosen.map(({ counts }) => {
-      const electrons = new Float32Array(counts.length);
-      const usable = new Uint8Array(counts.length);
-      for (let i = 0; i < counts.length; i++) {
-        const e = (counts[i] - offset) / gain;
-        const good = badPixels[i] === 0 && counts[i] < saturationCounts && e - e === 0;
-        usable[i] = good ? 1 : 0;
-        electrons[i] = good ? e : 0;
-      }
-      const light = measureLightLevel(electrons, backgroundE, usable, readVariance);
-      const background = backgroundE.map((e) => Math.max(0, light.scale * e + light.shift));
-      return { electrons, usable, background };
-    });
-    return measureSpotSigma(inElectrons, width, height, readVariance);
+  if (frameNumbers !== null && frameNumbers.length !== frames.length) {
+    throw new RangeError(`${frames.length} frames need as many numbers. Received ${frameNumbers.length}.`);
   }
+}
+
+/** When pairs of frames were taken: mean number of their two frames. */
+function pairNumbers(frameNumbers: readonly number[]): Float64Array {
+  return Float64Array.from({ length: Math.ceil(frameNumbers.length / 2) }, (_, p) => {
+    const last = Math.min(frameNumbers.length - 1, 2 * p + 1);
+    return 0.5 * (frameNumbers[2 * p] + frameNumbers[last]);
+  });
+}
+
+/** Variance of one pixel of one frame, counts^2. */
+function pixelVariance(
+  backgroundE: Float32Array,
+  { gainCountsPerE, readNoiseE }: Pick<ImageModel, 'gainCountsPerE' | 'readNoiseE'>,
+): Float32Array {
+  const square = gainCountsPerE * gainCountsPerE;
+  const variance = new Float32Array(backgroundE.length);
+  for (let i = 0; i < variance.length; i++) {
+    variance[i] = square * (backgroundE[i] + readNoiseE * readNoiseE) + 1e-12;
+  }
+  return variance;
 }

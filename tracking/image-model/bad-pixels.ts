@@ -1,66 +1,72 @@
-import type { Frame } from '../types';
 import { BLOCK_PX } from './block-grid';
+import type { ScanSums } from './pair-scan';
 
 /** A pixel's mean must be off by this many standard errors, and by this much of the noise of one frame. */
 const OFF_STANDARD_ERRORS = 8;
 const OFF_NOISE = 1.5;
 /** A tracer lights the neighbours too; a hot pixel doesn't. Mean of four neighbours, relative. */
 const NEIGHBOUR_SHARE_MOST = 0.2;
+/**
+ * A pixel that is bright now and then: its mean square is so many times what it should be, and that
+ * of its neighbours, relative, isn't. Squares of a spot of 0.5 px fall to 0.05 one pixel away.
+ */
+const BLINKING_EXCESS = 6;
+const BLINKING_ERRORS = 8;
+const BLINKING_NEIGHBOUR_SHARE_MOST = 0.04;
 /** A pixel whose values vary by less than this share of the variance is stuck. */
 const STUCK_VARIANCE_SHARE = 0.05;
 const STUCK_FRAMES_LEAST = 8;
 
 /**
- * Pixels that can't be trusted: hot, dead or stuck, told from tracers by neighbours that look as
- * usual.
+ * Pixels that can't be trusted: hot, dead, stuck or blinking, told from tracers by neighbours that
+ * look as usual.
  *
- * @param level background by pixel, counts.
+ * @param sums of what pixels are above the background, over `pairs` pairs of altogether `frames` frames.
  * @param variance expected variance of one frame by pixel, counts^2.
  */
 export function findBadPixels(
-  frames: readonly Frame[],
-  level: Float32Array,
-  variance: (at: number) => number,
+  { sum, squares }: Pick<ScanSums, 'sum' | 'squares'>,
+  variance: Float32Array,
+  pairs: number,
+  frames: number,
+  width: number,
+  height: number,
 ): Uint8Array {
-  const { width, height } = frames[0];
   const pixels = width * height;
-  const sum = new Float64Array(pixels);
-  const squares = new Float64Array(pixels);
   const bad = new Uint8Array(pixels);
-  for (const { counts } of frames) {
-    for (let i = 0; i < pixels; i++) {
-      const off = counts[i] - level[i];
-      sum[i] += off;
-      squares[i] += off * off;
-    }
-  }
-  const n = frames.length;
+  const offShare = Math.max(OFF_NOISE, OFF_STANDARD_ERRORS / Math.sqrt(frames));
+  const blinkingShare = Math.max(BLINKING_EXCESS, BLINKING_ERRORS * Math.sqrt(2 / frames));
+  let count = 0;
   for (let i = 0; i < pixels; i++) {
-    if (!(sum[i] - sum[i] === 0)) {
+    const expected = variance[i];
+    const off = sum[i] / pairs;
+    const meanSquare = squares[i] / pairs;
+    const stuck = frames >= STUCK_FRAMES_LEAST && meanSquare - off * off < STUCK_VARIANCE_SHARE * expected;
+    if (stuck || isHot(i, off, expected) || isBlinking(i, meanSquare - expected, expected)) {
       bad[i] = 1;
-      continue;
+      count++;
     }
-    const expected = variance(i);
-    const off = sum[i] / n;
-    const noise = Math.sqrt(expected);
-    const spread = squares[i] / n - off * off;
-    if (n >= STUCK_FRAMES_LEAST && spread < STUCK_VARIANCE_SHARE * expected) bad[i] = 1;
-    if (Math.abs(off) < Math.max(OFF_NOISE * noise, (OFF_STANDARD_ERRORS * noise) / Math.sqrt(n))) continue;
-    const around = neighbourMean(sum, i, width, height) / n;
-    if (around / off < NEIGHBOUR_SHARE_MOST) bad[i] = 1;
   }
   // Whole dark regions or a frozen recording are a property of the recording, not of its pixels.
-  let count = 0;
-  for (const value of bad) count += value;
   return count > pixels / BLOCK_PX ? new Uint8Array(pixels) : bad;
+
+  function isHot(i: number, off: number, expected: number): boolean {
+    if (off * off < offShare * offShare * expected) return false;
+    return neighbourMean(sum, i, width, height) / pairs / off < NEIGHBOUR_SHARE_MOST;
+  }
+
+  function isBlinking(i: number, excess: number, expected: number): boolean {
+    if (excess < blinkingShare * expected) return false;
+    const around = neighbourMean(squares, i, width, height) / pairs - expected;
+    return around < BLINKING_NEIGHBOUR_SHARE_MOST * excess;
+  }
 }
 
-function neighbourMean(values: Float64Array, at: number, width: number, height: number): number {
+function neighbourMean(values: Float32Array, at: number, width: number, height: number): number {
   const x = at % width;
   let sum = 0;
   let count = 0;
   const take = (i: number) => {
-    if (!(values[i] - values[i] === 0)) return;
     sum += values[i];
     count++;
   };

@@ -1,7 +1,7 @@
 /** Side of the blocks on which slowly varying quantities are measured, px. */
 export const BLOCK_PX = 16;
 
-/** An image cut into blocks of 16 px; the last row and column may be smaller. */
+/** An image cut into blocks of about 16 px; tables of it are row by row. */
 export interface BlockGrid {
   width: number;
   height: number;
@@ -9,12 +9,12 @@ export interface BlockGrid {
   rows: number;
 }
 
-export function blockGrid(width: number, height: number): BlockGrid {
+export function blockGrid(width: number, height: number, blockPx = BLOCK_PX): BlockGrid {
   return {
     width,
     height,
-    columns: Math.max(1, Math.round(width / BLOCK_PX)),
-    rows: Math.max(1, Math.round(height / BLOCK_PX)),
+    columns: Math.max(1, Math.round(width / blockPx)),
+    rows: Math.max(1, Math.round(height / blockPx)),
   };
 }
 
@@ -26,12 +26,12 @@ export function blockStart(block: number, blocks: number, pixels: number): numbe
 /** Values that no block has (NaN) become the mean of the neighbours that have one, outwards. */
 export function fillGaps(values: Float64Array, { columns, rows }: BlockGrid): void {
   for (let missing = true, round = 0; missing && round < columns + rows; round++) {
-    missing = false;
+    missing = values.some(Number.isNaN);
+    if (!missing) return;
     const before = values.slice();
     for (let r = 0; r < rows; r++) {
       for (let c = 0; c < columns; c++) {
         if (!Number.isNaN(before[r * columns + c])) continue;
-        missing = true;
         let sum = 0;
         let count = 0;
         for (let dr = -1; dr <= 1; dr++) {
@@ -51,40 +51,55 @@ export function fillGaps(values: Float64Array, { columns, rows }: BlockGrid): vo
 }
 
 /** Straight lines between the middles of blocks, carried on to the image's border. */
-export function interpolateBlocks(values: Float64Array, grid: BlockGrid): Float32Array {
-  const { width, height, columns, rows } = grid;
-  const across = axisWeights(width, columns);
-  const down = axisWeights(height, rows);
-  const image = new Float32Array(width * height);
-  for (let y = 0; y < height; y++) {
-    const top = down.first[y] * columns;
-    const bottom = down.second[y] * columns;
-    const v = down.weight[y];
-    for (let x = 0; x < width; x++) {
-      const a = across.first[x];
-      const b = across.second[x];
-      const u = across.weight[x];
-      const upper = values[top + a] * (1 - u) + values[top + b] * u;
-      const lower = values[bottom + a] * (1 - u) + values[bottom + b] * u;
-      image[y * width + x] = upper * (1 - v) + lower * v;
-    }
-  }
+export function interpolateBlocks(values: ArrayLike<number>, grid: BlockGrid): Float32Array {
+  const image = new Float32Array(grid.width * grid.height);
+  paintBlocks(values, grid, image);
   return image;
 }
 
-function axisWeights(pixels: number, blocks: number) {
-  const first = new Int32Array(pixels);
-  const second = new Int32Array(pixels);
-  const weight = new Float64Array(pixels);
-  const middle = (block: number) =>
-    0.5 * (blockStart(block, blocks, pixels) + blockStart(block + 1, blocks, pixels) - 1);
-  if (blocks === 1) return { first, second, weight };
-  let a = 0;
-  for (let i = 0; i < pixels; i++) {
-    while (a < blocks - 2 && i > middle(a + 1)) a++;
-    first[i] = a;
-    second[i] = a + 1;
-    weight[i] = (i - middle(a)) / (middle(a + 1) - middle(a));
+/** As `interpolateBlocks`, into an image of the grid's size. */
+export function paintBlocks(values: ArrayLike<number>, grid: BlockGrid, image: Float32Array): void {
+  const { width, height, columns, rows } = grid;
+  const middleX = blockMiddles(width, columns);
+  const middleY = blockMiddles(height, rows);
+  const row = new Float64Array(columns);
+  for (let y = 0, r = 0; y < height; y++) {
+    while (r < rows - 2 && y > middleY[r + 1]) r++;
+    const below = Math.min(rows - 1, r + 1);
+    const share = rows > 1 ? (y - middleY[r]) / (middleY[below] - middleY[r]) : 0;
+    for (let c = 0; c < columns; c++) {
+      const top = values[r * columns + c];
+      row[c] = top + share * (values[below * columns + c] - top);
+    }
+    paintRow(row, middleX, image, y * width, width);
   }
-  return { first, second, weight };
+}
+
+function paintRow(
+  row: Float64Array,
+  middle: Float64Array,
+  image: Float32Array,
+  start: number,
+  width: number,
+): void {
+  const columns = row.length;
+  if (columns === 1) {
+    image.fill(row[0], start, start + width);
+    return;
+  }
+  let x = 0;
+  for (let c = 0; c < columns - 1; c++) {
+    const slope = (row[c + 1] - row[c]) / (middle[c + 1] - middle[c]);
+    const base = row[c] - slope * middle[c];
+    const end = c === columns - 2 ? width : Math.ceil(middle[c + 1]);
+    for (; x < end; x++) image[start + x] = base + slope * x;
+  }
+}
+
+function blockMiddles(pixels: number, blocks: number): Float64Array {
+  const middle = new Float64Array(blocks);
+  for (let b = 0; b < blocks; b++) {
+    middle[b] = 0.5 * (blockStart(b, blocks, pixels) + blockStart(b + 1, blocks, pixels) - 1);
+  }
+  return middle;
 }

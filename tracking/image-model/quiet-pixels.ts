@@ -1,196 +1,158 @@
+import {
+  blockGrid,
+  blockStart,
+  fillGaps,
+  interpolateBlocks,
+  paintBlocks,
+  type BlockGrid,
+} from './block-grid';
+import { framePairs, type FramePair } from './frame-pairs';
+import { nthElement } from './nth-element';
+import {
+  binGrid,
+  createPairScanner,
+  markSuspects,
+  SUSPECT_LEVEL,
+  type BinGrid,
+  type ScanSums,
+} from './pair-scan';
+import { roughLevel } from './rough-level';
 import type { Frame } from '../types';
-import { blockGrid, blockStart, fillGaps, interpolateBlocks, type BlockGrid } from './block-grid';
 
-/** Values looked at per block for a first idea of its level and noise. */
-const ROUGH_SAMPLES = 2000;
-/** Mean of 3 x 3 pixels, in units of its noise, from which a tracer is suspected. */
-const SUSPECT_LEVEL = 3.5;
-/** A tracer's light reaches farther than the pixels that give it away. */
-const SUSPECT_REACH_PX = 4;
-/** A block with a smaller share of quiet pixels is filled from its neighbours. */
-const QUIET_SHARE_LEAST = 0.05;
+/** Pixels from which a frame's brightness as a whole is told. */
+const SHIFT_SAMPLES = 2000;
 
-/** Which pixels of which frames show nothing but background. */
+/** Which parts of which frames show nothing but background. */
 export interface QuietPixels {
   grid: BlockGrid;
-  /** Per frame: 1 where no tracer is suspected. */
+  bins: BinGrid;
+  pairs: FramePair[];
+  /** Per pair of frames and bin: 1 where neither frame shows a tracer. */
   quiet: Uint8Array[];
-  /** Mean of quiet pixels by block and by pixel, counts. */
-  blockLevel: Float64Array;
+  /** Mean background of the recording by pixel, counts. */
   level: Float32Array;
+  /** A first idea of level and noise of one pixel, counts, on blocks of their own. */
+  roughLevel: Float64Array;
+  roughNoise: Float64Array;
+  sums: ScanSums;
 }
 
 /**
- * Tells background from tracers, moving or standing still: a first level and noise per block from
- * the lower half of its values, which tracers hardly touch; then pixels around groups that stand
- * out are set aside, and the rest is averaged.
+ * Tells background from tracers, moving or standing still. From a rough level, bins around groups
+ * that stand out of a frame are set aside in it; from the mean of what is left over the whole
+ * recording, bins around groups that stand out of that, as faint tracers do which never move, are
+ * set aside in all frames.
  */
 export function findQuietPixels(frames: readonly Frame[]): QuietPixels {
   const { width, height } = frames[0];
+  const pixels = width * height;
   const grid = blockGrid(width, height);
-  const { level, noise } = roughLevel(frames, grid);
-  const roughImage = interpolateBlocks(level, grid);
-  const noiseImage = interpolateBlocks(noise, grid);
-  const quiet = frames.map((frame) => quietOfFrame(frame, roughImage, noiseImage));
-  const blockLevel = meanByBlock(frames, quiet, grid);
-  return { grid, quiet, blockLevel, level: interpolateBlocks(blockLevel, grid) };
+  const bins = binGrid(width, height);
+  const pairs = framePairs(frames);
+  const rough = roughLevel(pairs);
+  const suspect = suspectSums(rough.noise, rough.grid, bins);
+  const sums: ScanSums = {
+    sum: new Float32Array(pixels),
+    squares: new Float32Array(pixels),
+    quietSum: new Float32Array(bins.columns * bins.rows),
+    quietPairs: new Uint8Array(bins.columns * bins.rows),
+    highest: -Infinity,
+    highestPixels: 0,
+  };
+  const scanner = createPairScanner(bins);
+  const level = new Float32Array(pixels);
+  const meanLevel = new Float64Array(rough.noise.length);
+  const quiet = pairs.map((pair, p) => {
+    paintBlocks(rough.levels[p], rough.grid, level);
+    rough.levels[p].forEach((value, b) => (meanLevel[b] += value / pairs.length));
+    const shift = medianShift(pair.first.counts, level);
+    const shifts = [shift, pair.alone ? shift : medianShift(pair.second.counts, level)] as const;
+    const mask = new Uint8Array(bins.columns * bins.rows);
+    scanner.scan(pair, level, shifts, suspect, mask, sums);
+    return mask;
+  });
+  paintBlocks(meanLevel, rough.grid, level);
+  const standing = findStanding(sums, suspect, grid, bins);
+  if (standing) for (const mask of quiet) for (let i = 0; i < mask.length; i++) mask[i] &= standing[i];
+  const correction = interpolateBlocks(meanByBlock(sums, grid, bins, standing), grid);
+  for (let i = 0; i < pixels; i++) level[i] += correction[i];
+  return { grid, bins, pairs, quiet, level, roughLevel: meanLevel, roughNoise: rough.noise, sums };
 }
 
-function roughLevel(frames: readonly Frame[], grid: BlockGrid) {
-  const { width, height, columns, rows } = grid;
-  const level = new Float64Array(columns * rows).fill(Number.NaN);
-  const noise = new Float64Array(columns * rows).fill(Number.NaN);
-  const samples = new Float64Array(ROUGH_SAMPLES);
-  for (let r = 0; r < rows; r++) {
-    for (let c = 0; c < columns; c++) {
-      const x0 = blockStart(c, columns, width);
-      const y0 = blockStart(r, rows, height);
-      const w = blockStart(c + 1, columns, width) - x0;
-      const pixels = w * (blockStart(r + 1, rows, height) - y0);
-      const all = pixels * frames.length;
-      const step = Math.max(1, all / ROUGH_SAMPLES);
-      let count = 0;
-      for (let k = 0; k < all && count < ROUGH_SAMPLES; k += step) {
-        const at = Math.floor(k);
-        const pixel = at % pixels;
-        const frame = frames[(at - pixel) / pixels];
-        const value = frame.counts[(y0 + Math.floor(pixel / w)) * width + x0 + (pixel % w)];
-        if (Number.isFinite(value)) samples[count++] = value;
-      }
-      if (count === 0) continue;
-      const sorted = samples.subarray(0, count).sort();
-      const median = sorted[Math.floor(0.5 * count)];
-      const spread = Math.max(median - sorted[Math.floor(0.16 * count)], smallestStep(sorted));
-      const mean = clippedMean(sorted, median, spread);
-      level[r * columns + c] = mean;
-      noise[r * columns + c] = Math.max(lowerSpread(sorted, mean), 0.5 * smallestStep(sorted));
-    }
-  }
-  fillGaps(level, grid);
-  fillGaps(noise, grid);
-  return { level, noise };
-}
-
-/** Root mean square below the mean, which tracers, being bright, don't widen. */
-function lowerSpread(sorted: Float64Array, mean: number): number {
-  let squares = 0;
-  let count = 0;
-  for (const value of sorted) {
-    if (value >= mean) break;
-    squares += (value - mean) ** 2;
-    count++;
-  }
-  return count > 0 ? Math.sqrt(squares / count) : 0;
-}
-
-/** Smallest difference between values: 1 for whole counts, next to nothing for continuous data. */
-function smallestStep(sorted: Float64Array): number {
-  let step = Infinity;
-  for (let i = 1; i < sorted.length; i++) {
-    const gap = sorted[i] - sorted[i - 1];
-    if (gap > 0 && gap < step) step = gap;
-  }
-  return step < Infinity ? step : 1;
-}
-
-function clippedMean(values: Float64Array, centre: number, spread: number): number {
-  let mean = centre;
-  for (let round = 0; round < 4; round++) {
-    let sum = 0;
-    let count = 0;
-    for (const value of values) {
-      if (Math.abs(value - mean) > 2.5 * spread) continue;
-      sum += value;
-      count++;
-    }
-    if (count > 0) mean = sum / count;
-  }
-  return mean;
-}
-
-function quietOfFrame(
-  { width, height, counts }: Frame,
-  level: Float32Array,
-  noise: Float32Array,
-): Uint8Array {
-  const shift = medianShift(counts, level);
-  const rows = new Float32Array(width * height);
-  for (let y = 0; y < height; y++) {
-    let previous = 0;
-    let present = excess(counts, level, noise, shift, y * width);
-    for (let x = 0; x < width; x++) {
-      const at = y * width + x;
-      const next = x + 1 < width ? excess(counts, level, noise, shift, at + 1) : 0;
-      rows[at] = previous + present + next;
-      previous = present;
-      present = next;
-    }
-  }
-  const quiet = new Uint8Array(width * height).fill(1);
-  for (let y = 0; y < height; y++) {
-    for (let x = 0; x < width; x++) {
-      const at = y * width + x;
-      const sum = rows[at] + (y > 0 ? rows[at - width] : 0) + (y + 1 < height ? rows[at + width] : 0);
-      if (sum < 3 * SUSPECT_LEVEL) continue;
-      const left = Math.max(0, x - SUSPECT_REACH_PX);
-      const right = Math.min(width - 1, x + SUSPECT_REACH_PX);
-      const bottom = Math.min(height - 1, y + SUSPECT_REACH_PX);
-      for (let j = Math.max(0, y - SUSPECT_REACH_PX); j <= bottom; j++) {
-        quiet.fill(0, j * width + left, j * width + right + 1);
-      }
-    }
-  }
-  for (let i = 0; i < counts.length; i++) if (!Number.isFinite(counts[i])) quiet[i] = 0;
-  return quiet;
-}
-
-function excess(
-  counts: Float32Array,
-  level: Float32Array,
-  noise: Float32Array,
-  shift: number,
-  at: number,
-): number {
-  const value = (counts[at] - level[at] - shift) / noise[at];
-  return value - value === 0 ? value : 0;
+/** Sum of 2 x 2 bins, 16 pixels, from which a tracer is suspected. */
+function suspectSums(noise: Float64Array, grid: BlockGrid, { columns, rows }: BinGrid): Float32Array {
+  const suspect = new Float32Array(columns * rows);
+  const perNoise = 4 * SUSPECT_LEVEL;
+  paintBlocks(
+    noise.map((n) => perNoise * n),
+    { ...grid, width: columns, height: rows },
+    suspect,
+  );
+  return suspect;
 }
 
 /** By how much a frame is brighter than the level as a whole, counts. */
 function medianShift(counts: Float32Array, level: Float32Array): number {
-  const step = Math.max(1, Math.floor(counts.length / 4000)) | 1;
-  const values: number[] = [];
-  for (let i = 0; i < counts.length; i += step) {
-    const value = counts[i] - level[i];
-    if (Number.isFinite(value)) values.push(value);
+  // Odd, so that columns take turns.
+  const stride = Math.max(1, Math.floor(counts.length / SHIFT_SAMPLES)) | 1;
+  const values = new Float64Array(Math.ceil(counts.length / stride));
+  let count = 0;
+  for (let i = 0; i < counts.length; i += stride) {
+    const off = counts[i] - level[i];
+    if (off - off === 0) values[count++] = off;
   }
-  values.sort((a, b) => a - b);
-  return values.length > 0 ? values[values.length >> 1] : 0;
+  return count > 0 ? nthElement(values, count, count >> 1) : 0;
 }
 
-function meanByBlock(frames: readonly Frame[], quiet: readonly Uint8Array[], grid: BlockGrid): Float64Array {
-  const { width, height, columns, rows } = grid;
-  const level = new Float64Array(columns * rows);
+/** 0 near bins whose mean over the recording stands out, 1 elsewhere; null where none does. */
+function findStanding(
+  sums: ScanSums,
+  suspect: Float32Array,
+  grid: BlockGrid,
+  bins: BinGrid,
+): Uint8Array | null {
+  const { quietSum, quietPairs } = sums;
+  const excess = new Float32Array(bins.columns * bins.rows);
+  paintBlocks(
+    meanByBlock(sums, grid, bins, null),
+    { ...grid, width: bins.columns, height: bins.rows },
+    excess,
+  );
+  for (let i = 0; i < excess.length; i++) {
+    const n = quietPairs[i];
+    // As noisy as a bin of one frame: a pair's mean has half its variance, the sum of n such n halves.
+    excess[i] = n === 0 ? 0 : (quietSum[i] - 4 * n * excess[i]) / Math.sqrt(0.5 * n);
+  }
+  const standing = new Uint8Array(excess.length).fill(1);
+  return markSuspects(excess, suspect, bins, standing) ? standing : null;
+}
+
+/** Mean of quiet pixels above the rough level, counts. */
+function meanByBlock(
+  { quietSum, quietPairs }: ScanSums,
+  grid: BlockGrid,
+  bins: BinGrid,
+  usable: Uint8Array | null,
+): Float64Array {
+  const { columns, rows } = grid;
+  const means = new Float64Array(columns * rows);
   for (let r = 0; r < rows; r++) {
+    const y1 = blockStart(r + 1, rows, bins.rows);
     for (let c = 0; c < columns; c++) {
-      const x0 = blockStart(c, columns, width);
-      const x1 = blockStart(c + 1, columns, width);
-      const y0 = blockStart(r, rows, height);
-      const y1 = blockStart(r + 1, rows, height);
+      const x0 = blockStart(c, columns, bins.columns);
+      const x1 = blockStart(c + 1, columns, bins.columns);
       let sum = 0;
-      let count = 0;
-      for (let f = 0; f < frames.length; f++) {
-        for (let y = y0; y < y1; y++) {
-          for (let at = y * width + x0, end = y * width + x1; at < end; at++) {
-            if (quiet[f][at] === 0) continue;
-            sum += frames[f].counts[at];
-            count++;
-          }
+      let pixels = 0;
+      for (let y = blockStart(r, rows, bins.rows); y < y1; y++) {
+        for (let at = y * bins.columns + x0, end = y * bins.columns + x1; at < end; at++) {
+          if (usable !== null && usable[at] === 0) continue;
+          sum += quietSum[at];
+          pixels += 4 * quietPairs[at];
         }
       }
-      const pixels = (x1 - x0) * (y1 - y0) * frames.length;
-      level[r * columns + c] = count > QUIET_SHARE_LEAST * pixels ? sum / count : Number.NaN;
+      means[r * columns + c] = pixels > 0 ? sum / pixels : Number.NaN;
     }
   }
-  fillGaps(level, grid);
-  return level;
+  fillGaps(means, grid);
+  return means;
 }

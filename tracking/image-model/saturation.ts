@@ -10,19 +10,24 @@ const NOISE_SIGMAS = 12;
 /**
  * Count at which the camera clips, or Infinity when no frame shows it: a highest value that recurs
  * and forms flat tops, far above the background.
+ *
+ * @param highest highest count of any frame, -Infinity when there is none, and how many pixels have it.
+ * @param level background, counts, and its variance, counts^2.
  */
-export function findSaturation(frames: readonly Frame[], level: number, variance: number): number {
-  let highest = -Infinity;
-  for (const { counts } of frames) for (const value of counts) if (value > highest) highest = value;
-  if (!(highest > level + NOISE_SIGMAS * Math.sqrt(variance))) return Infinity;
-  let pixels = 0;
+export function findSaturation(
+  frames: readonly Frame[],
+  highest: number,
+  pixels: number,
+  level: number,
+  variance: number,
+): number {
+  if (!(highest > level + NOISE_SIGMAS * Math.sqrt(variance)) || pixels < PIXELS_LEAST) return Infinity;
   let runs = 0;
   for (const { counts, width } of frames) {
-    for (let i = 0; i < counts.length; i++) {
-      if (counts[i] !== highest) continue;
-      pixels++;
+    for (let i = counts.indexOf(highest); i >= 0; i = counts.indexOf(highest, i + 1)) {
       if (i % width > 0 && counts[i - 1] === highest) runs++;
+      if (runs >= FLAT_RUNS_LEAST) return highest;
     }
   }
-  return pixels >= PIXELS_LEAST && runs >= FLAT_RUNS_LEAST ? highest : Infinity;
+  return Infinity;
 }

@@ -1,13 +1,9 @@
-import { FitWindow } from '../detection/fit-window';
-import { JointFit } from '../detection/joint-fit';
 import { createMatchedFilter, findPeaks, type PeakList } from '../detection/matched-filter';
-
-/** A frame in photoelectrons with its background. */
-export interface ElectronFrame {
-  electrons: Float32Array;
-  background: Float32Array;
-  usable: Uint8Array;
-}
+import type { ElectronFrames } from './electron-frames';
+import { lonePeaks } from './lone-peaks';
+import { nthElement } from './nth-element';
+import { selfSimilarSigma } from './self-similarity';
+import { WidthFit } from './width-fit';
 
 /** Size assumed when a recording shows no spots: diffraction-limited, well-sampled optics. */
 export const SPOT_SIGMA_UNKNOWN_PX = 1.2;
@@ -20,160 +16,119 @@ const ALONE_SIGMAS = 6;
 const SPOTS_MOST = 400;
 const SPOTS_LEAST = 8;
 const ROUNDS = 5;
-/** Widths at which each spot's likelihood is compared. */
-const TRIED = [0.8, 1, 1.25];
-const LARGEST_LAG_PX = 24;
+/** Spots are looked for again when the width has changed by more than this. */
+const SOUGHT_AGAIN_CHANGE = 0.1;
+const CHANGE_DONE = 0.002;
+/** Pixels from which the first idea of the width is made. */
+const FIRST_PIXELS = 600_000;
+
+/** How wide the tracers' images are. */
+export interface SpotSize {
+  /** Typical standard deviation of a spot, px. */
+  sigmaPx: number;
+  /** How much tracers differ in it, standard deviation, px, without the error of measuring each. NaN when unknown. */
+  spreadPx: number;
+}
+
+interface FoundSpot {
+  frame: number;
+  at: number;
+  brightnessE: number;
+}
 
 /**
  * Standard deviation of a tracer's image: a start from how far the image resembles itself when
  * shifted, then the median over clear, lone spots of the width that makes each most likely.
  */
-export function measureSpotSigma(
-  frames: readonly ElectronFrame[],
+export function measureSpotSize(
+  frames: ElectronFrames,
   width: number,
   height: number,
   readVariance: number,
-): number {
-  const noises = frames.map((frame) => inUnitsOfNoise(frame, readVariance));
-  let sigma = selfSimilarSigma(noises, width, height);
-  if (Number.isNaN(sigma)) return SPOT_SIGMA_UNKNOWN_PX;
+): SpotSize {
+  const unknown: SpotSize = { sigmaPx: SPOT_SIGMA_UNKNOWN_PX, spreadPx: Number.NaN };
+  const start = (count: number) =>
+    selfSimilarSigma(
+      Array.from({ length: count }, (_, f) => frames.frame(f).noise),
+      width,
+      height,
+    );
+  const few = Math.max(1, Math.min(frames.count, Math.floor(FIRST_PIXELS / (width * height))));
+  let sigma = start(few);
+  if (Number.isNaN(sigma) && few < frames.count) sigma = start(frames.count);
+  if (Number.isNaN(sigma)) return unknown;
+  sigma = Math.min(SIGMA_MOST_PX, Math.max(SIGMA_LEAST_PX, sigma));
+  let sought = Number.NaN;
+  let spots: FoundSpot[] = [];
+  let size = unknown;
   for (let round = 0; round < ROUNDS; round++) {
-    const widths = likelyWidths(frames, noises, width, height, readVariance, sigma);
-    if (widths.length < SPOTS_LEAST) return round === 0 ? SPOT_SIGMA_UNKNOWN_PX : sigma;
-    widths.sort((a, b) => a - b);
-    const next = Math.min(SIGMA_MOST_PX, Math.max(SIGMA_LEAST_PX, widths[widths.length >> 1]));
-    const change = Math.abs(next - sigma) / sigma;
+    if (!(Math.abs(sigma / sought - 1) < SOUGHT_AGAIN_CHANGE)) {
+      sought = sigma;
+      spots = findLoneSpots(frames, width, height, readVariance, sigma);
+    }
+    const fitted = fitWidths(spots, frames, width, readVariance, sigma);
+    if (fitted.widths.length < SPOTS_LEAST) return round === 0 ? unknown : size;
+    size = summarise(fitted.widths, fitted.errors);
+    const next = Math.min(SIGMA_MOST_PX, Math.max(SIGMA_LEAST_PX, size.sigmaPx));
+    const change = Math.abs(next / sigma - 1);
     sigma = next;
-    if (change < 0.003) break;
+    size.sigmaPx = sigma;
+    if (change < CHANGE_DONE) break;
   }
-  return sigma;
+  return size;
 }
 
-function inUnitsOfNoise(
-  { electrons, background, usable }: ElectronFrame,
-  readVariance: number,
-): Float32Array {
-  return electrons.map((e, i) =>
-    usable[i] === 1 ? (e - background[i]) / Math.sqrt(background[i] + readVariance + 1e-3) : 0,
-  );
-}
-
-/**
- * An image of Gaussian spots shifted by r correlates with itself as exp(-r^2 / 4 s^2); noise adds
- * at r = 0 only. s follows from where the correlation has fallen to half of its value at 1 px. NaN
- * when there is nothing but noise.
- */
-function selfSimilarSigma(noises: readonly Float32Array[], width: number, height: number): number {
-  const lags = Math.min(LARGEST_LAG_PX, Math.floor(Math.min(width, height) / 3));
-  const correlation = (lag: number) => {
-    let sum = 0;
-    let count = 0;
-    for (const noise of noises) {
-      for (let y = 0; y + lag < height; y++) {
-        const row = y * width;
-        for (let x = 0; x + lag < width; x++) {
-          sum += noise[row + x] * (noise[row + x + lag] + noise[row + x + lag * width]);
-        }
-        count += 2 * (width - lag);
-      }
-    }
-    return sum / count;
-  };
-  const first = correlation(1);
-  const certain = 6 / Math.sqrt(2 * noises.length * width * height);
-  if (!(first > certain)) return Number.NaN;
-  let previous = first;
-  for (let lag = 2; lag <= lags; lag++) {
-    const value = correlation(lag);
-    if (value < 0.5 * first) {
-      // Straight line of ln C against lag^2, which it is for Gaussian spots.
-      const low = Math.log(Math.max(value, 0.02 * first) / first);
-      const high = Math.log(previous / first);
-      const share = (high - Math.log(0.5)) / (high - low);
-      const squared = (lag - 1) ** 2 + share * (lag ** 2 - (lag - 1) ** 2);
-      const variance = (squared - 1) / (4 * Math.LN2) - 1 / 12;
-      return Math.min(SIGMA_MOST_PX, Math.max(SIGMA_LEAST_PX, Math.sqrt(Math.max(0, variance))));
-    }
-    previous = value;
-  }
-  return SIGMA_MOST_PX;
-}
-
-function likelyWidths(
-  frames: readonly ElectronFrame[],
-  noises: readonly Float32Array[],
+/** Clear spots that stand alone, frame by frame until there are enough. */
+function findLoneSpots(
+  frames: ElectronFrames,
   width: number,
   height: number,
   readVariance: number,
   sigma: number,
-): number[] {
+): FoundSpot[] {
   const filter = createMatchedFilter(width, height, sigma);
   const response = new Float32Array(width * height);
   const peaks: PeakList = { count: 0, at: new Int32Array(1024) };
-  const reach = Math.max(2, Math.ceil(3 * sigma * TRIED[2]));
-  const fits = TRIED.map((factor) => new JointFit(factor * sigma, reach, 3));
-  const window = new FitWindow();
-  const xs = new Float64Array(1);
-  const ys = new Float64Array(1);
-  const widths: number[] = [];
-  const perFrame = Math.ceil(SPOTS_MOST / frames.length);
-  frames.forEach((frame, f) => {
-    filter.apply(noises[f], response);
+  const margin = new WidthFit(sigma, readVariance).marginPx;
+  const spots: FoundSpot[] = [];
+  for (let f = 0; f < frames.count && spots.length < SPOTS_MOST; f++) {
+    const { noise, background } = frames.frame(f);
+    filter.apply(noise, response);
     findPeaks(response, width, height, NEIGHBOUR_RESPONSE, peaks);
-    const lone = lonePeaks(peaks, response, width, height, ALONE_SIGMAS * sigma, reach).slice(0, perFrame);
-    for (const at of lone) {
-      xs[0] = at % width;
-      ys[0] = Math.floor(at / width);
-      const brightness =
-        (response[at] * Math.sqrt(frame.background[at] + readVariance)) / filter.kernel.squares;
-      const { electrons, background, usable } = frame;
-      window.load(electrons, background, usable, width, height, readVariance, xs, ys, 1, reach);
-      const likelihood = fits.map((fit) => {
-        fit.count = 1;
-        fit.x[0] = xs[0];
-        fit.y[0] = ys[0];
-        fit.n[0] = brightness;
-        fit.run(window);
-        return fit.logLikelihood(window);
-      });
-      const best = vertex(likelihood[0], likelihood[1], likelihood[2]);
-      widths.push(sigma * TRIED[2] ** best);
+    const lone = lonePeaks(peaks, response, width, height, CLEAR_RESPONSE, ALONE_SIGMAS * sigma, margin);
+    for (const at of lone.slice(0, SPOTS_MOST - spots.length)) {
+      const perResponse = Math.sqrt(background[at] + readVariance) / filter.kernel.squares;
+      spots.push({ frame: f, at, brightnessE: response[at] * perResponse });
     }
-  });
-  return widths;
+  }
+  return spots;
 }
 
-/** Maximum of the parabola through values at -1, 0, 1, not farther out than 2. */
-function vertex(before: number, middle: number, after: number): number {
-  const bend = 2 * middle - before - after;
-  if (!(bend > 0)) return after > before ? 2 : -2;
-  return Math.max(-2, Math.min(2, (0.5 * (after - before)) / bend));
-}
-
-/** Clear peaks with no other peak near, away from the border, the clearest first. */
-function lonePeaks(
-  peaks: PeakList,
-  response: Float32Array,
+function fitWidths(
+  spots: readonly FoundSpot[],
+  frames: ElectronFrames,
   width: number,
-  height: number,
-  apartPx: number,
-  marginPx: number,
-): number[] {
-  const places = Array.from(peaks.at.subarray(0, peaks.count));
-  const lone = places.filter((at, k) => {
-    if (response[at] < CLEAR_RESPONSE) return false;
-    const x = at % width;
-    const y = Math.floor(at / width);
-    if (x < marginPx || y < marginPx || x >= width - marginPx || y >= height - marginPx) return false;
-    // Peaks are in reading order, so only those a few rows away need a look.
-    for (const step of [-1, 1]) {
-      for (let m = k + step; m >= 0 && m < places.length; m += step) {
-        const dy = Math.floor(places[m] / width) - y;
-        if (Math.abs(dy) > apartPx) break;
-        if (Math.hypot((places[m] % width) - x, dy) < apartPx) return false;
-      }
-    }
-    return true;
-  });
-  return lone.sort((a, b) => response[b] - response[a] || a - b);
+  readVariance: number,
+  sigma: number,
+) {
+  const fit = new WidthFit(sigma, readVariance);
+  const widths: number[] = [];
+  const errors: number[] = [];
+  for (const { frame, at, brightnessE } of spots) {
+    if (!fit.run(frames.frame(frame), width, at, brightnessE)) continue;
+    widths.push(fit.widthPx);
+    errors.push(fit.errorPx);
+  }
+  return { widths, errors };
+}
+
+function summarise(widths: readonly number[], errors: readonly number[]): SpotSize {
+  const median = medianOf(widths);
+  const deviation = 1.4826 * medianOf(widths.map((width) => Math.abs(width - median)));
+  const error = medianOf(errors);
+  return { sigmaPx: median, spreadPx: Math.sqrt(Math.max(0, deviation * deviation - error * error)) };
+}
+
+function medianOf(values: readonly number[]): number {
+  return nthElement(Float64Array.from(values), values.length, values.length >> 1);
 }
