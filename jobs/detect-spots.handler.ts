@@ -1,4 +1,4 @@
-import { advance, analysisWork, enterStage, failAnalysis } from '@/models/queries/analysis-progress';
+import { advance, analysisWork, enterStage } from '@/models/queries/analysis-progress';
 import { readMeasuredImage, saveSpotsPerFrame } from '@/models/queries/analysis-outcome';
 import { readSpotsPerFrame, saveSpotChunk } from '@/models/queries/spot-chunks';
 import { chunksOf } from './chunk-plan';
@@ -7,6 +7,7 @@ import type { JobHandler } from './job-context';
 import { linkTracksJob } from './link-tracks';
 import { enqueueJob } from './queue';
 import { stackFolder } from './stack-folder';
+import { giveUpAnalysis } from './tell-of-analysis';
 
 export const detectSpotsHandler: JobHandler<DetectSpotsPayload> = {
   definition: detectSpotsJob,
@@ -40,5 +41,5 @@ export const detectSpotsHandler: JobHandler<DetectSpotsPayload> = {
     });
     await advance(analysisId, 'detect-spots', stored / chunks);
   },
-  onGivenUp: ({ subjectId }, reason, transaction) => failAnalysis(subjectId, reason, transaction),
+  onGivenUp: ({ subjectId }, reason, transaction) => giveUpAnalysis(subjectId, reason, transaction),
 };

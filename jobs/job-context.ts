@@ -35,7 +35,12 @@ export interface JobHandler<Payload extends Record<string, unknown> = Record<str
   ): Promise<void>;
 }
 
-const TABLE_OF: Record<JobSubject, string> = { recording: 'recordings', analysis: 'analyses' };
+const TABLE_OF: Record<JobSubject, string> = {
+  recording: 'recordings',
+  analysis: 'analyses',
+  mail: 'mails',
+  lab: 'labs',
+};
 
 /** Everyone locks the subject before rows of its work, so that nobody waits in a circle. */
 export async function lockSubject(

@@ -1,7 +1,7 @@
 import type { z } from 'zod';
 
 /** What a job works for: its row is locked before results are written, and fails with the job. */
-export type JobSubject = 'recording' | 'analysis';
+export type JobSubject = 'recording' | 'analysis' | 'mail' | 'lab';
 
 /** The public half of a job: all that the web needs to ask for the work. */
 export interface JobDefinition<Payload extends Record<string, unknown> = Record<string, unknown>> {
@@ -9,6 +9,8 @@ export interface JobDefinition<Payload extends Record<string, unknown> = Record<
   subject: JobSubject;
   /** Tries before the job is given up; each claim by a worker is one. */
   maxAttempts: number;
+  /** Pause after a failed attempt, counted from 1, ms; left out, it is short and doubles. */
+  pauseMs?: (attempt: number) => number;
   payload: z.ZodType<Payload>;
 }
 

@@ -1,4 +1,4 @@
-import { analysisWork, enterStage, failAnalysis } from '@/models/queries/analysis-progress';
+import { analysisWork, enterStage } from '@/models/queries/analysis-progress';
 import { readMeasuredImage } from '@/models/queries/analysis-outcome';
 import { readSpotChunks } from '@/models/queries/spot-chunks';
 import { dropStagedTracks } from '@/models/queries/staged-results';
@@ -8,6 +8,7 @@ import { LONG_TIMEOUT_MS } from './job-timeouts';
 import { linkTracksJob } from './link-tracks';
 import { measureFlowJob } from './measure-flow';
 import { enqueueJob } from './queue';
+import { giveUpAnalysis } from './tell-of-analysis';
 
 export const linkTracksHandler: JobHandler<Record<string, never>> = {
   definition: linkTracksJob,
@@ -30,5 +31,5 @@ export const linkTracksHandler: JobHandler<Record<string, never>> = {
       await enqueueJob(measureFlowJob, { labId, subjectId: analysisId, payload: {} }, transaction);
     });
   },
-  onGivenUp: ({ subjectId }, reason, transaction) => failAnalysis(subjectId, reason, transaction),
+  onGivenUp: ({ subjectId }, reason, transaction) => giveUpAnalysis(subjectId, reason, transaction),
 };

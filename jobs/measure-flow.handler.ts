@@ -1,5 +1,5 @@
 import type { AnalysisSummary } from '@/lib/analysis-facts';
-import { advance, analysisWork, failAnalysis } from '@/models/queries/analysis-progress';
+import { advance, analysisWork } from '@/models/queries/analysis-progress';
 import { finishAnalysis, readOrder, saveMeasures } from '@/models/queries/analysis-outcome';
 import { readTracks } from '@/models/queries/read-tracks';
 import { readSpotsPerFrame } from '@/models/queries/spot-chunks';
@@ -10,6 +10,7 @@ import { POINT_BRIDGED, type Tracks } from '@/tracking/types';
 import type { JobHandler } from './job-context';
 import { LONG_TIMEOUT_MS } from './job-timeouts';
 import { measureFlowJob } from './measure-flow';
+import { giveUpAnalysis, tellOfAnalysis } from './tell-of-analysis';
 
 /** The tracks as linking made them; corrections make later revisions. */
 const AS_LINKED = 0;
@@ -47,9 +48,10 @@ export const measureFlowHandler: JobHandler<Record<string, never>> = {
       await saveMeasures(labId, analysisId, AS_LINKED, measures, transaction);
       const spots = await readSpotsPerFrame(analysisId, transaction);
       await finishAnalysis(analysisId, summaryOf(spots, tracks, measures), transaction);
+      await tellOfAnalysis(analysisId, { kind: 'analysis-done' }, transaction);
     });
   },
-  onGivenUp: ({ subjectId }, reason, transaction) => failAnalysis(subjectId, reason, transaction),
+  onGivenUp: ({ subjectId }, reason, transaction) => giveUpAnalysis(subjectId, reason, transaction),
 };
 
 function summaryOf(

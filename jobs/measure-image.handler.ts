@@ -1,4 +1,4 @@
-import { advance, analysisWork, enterStage, failAnalysis } from '@/models/queries/analysis-progress';
+import { advance, analysisWork, enterStage } from '@/models/queries/analysis-progress';
 import { readOrder, saveMeasuredImage } from '@/models/queries/analysis-outcome';
 import { dropStagedResults } from '@/models/queries/staged-results';
 import { chunksOf } from './chunk-plan';
@@ -7,6 +7,7 @@ import type { JobHandler } from './job-context';
 import { measureImageJob } from './measure-image';
 import { enqueueJobs } from './queue';
 import { stackFolder } from './stack-folder';
+import { giveUpAnalysis } from './tell-of-analysis';
 
 export const measureImageHandler: JobHandler<Record<string, never>> = {
   definition: measureImageJob,
@@ -38,5 +39,5 @@ export const measureImageHandler: JobHandler<Record<string, never>> = {
       await enqueueJobs(detectSpotsJob, requests, transaction);
     });
   },
-  onGivenUp: ({ subjectId }, reason, transaction) => failAnalysis(subjectId, reason, transaction),
+  onGivenUp: ({ subjectId }, reason, transaction) => giveUpAnalysis(subjectId, reason, transaction),
 };

@@ -1,9 +1,11 @@
+import { checkFilesHandler } from './check-files.handler';
 import { detectSpotsHandler } from './detect-spots.handler';
 import { ingestRecordingHandler } from './ingest-recording.handler';
 import type { JobHandler } from './job-context';
 import { linkTracksHandler } from './link-tracks.handler';
 import { measureFlowHandler } from './measure-flow.handler';
 import { measureImageHandler } from './measure-image.handler';
+import { sendMailHandler } from './send-mail.handler';
 
 const handlers = [
   ingestRecordingHandler,
@@ -11,6 +13,8 @@ const handlers = [
   detectSpotsHandler,
   linkTracksHandler,
   measureFlowHandler,
+  sendMailHandler,
+  checkFilesHandler,
 ] as unknown as JobHandler[];
 
 /** Every kind of work and who does it. */

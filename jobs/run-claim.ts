@@ -14,6 +14,7 @@ import type { ComputePool } from './compute/pool';
 import { commitClaim, lockSubject, type JobContext, type JobHandler } from './job-context';
 import type { JobSubject } from './job-definition';
 import type { Say } from './say';
+import { FinalFailure } from './final-failure';
 import { withRetries } from './with-retries';
 
 export interface ClaimTimes {
@@ -117,6 +118,7 @@ export function reasonOf(cause: unknown): Reason {
       final: cause.code === 'RECIPE',
     };
   }
+  if (cause instanceof FinalFailure) return { code: cause.code, detail: cause.message, final: true };
   const detail = cause instanceof Error ? cause.message : String(cause);
   return { code: 'FAULT', detail, final: false };
 }
@@ -128,7 +130,7 @@ export async function endFailed(
   reason: Reason,
   backOffMs: number,
 ): Promise<ClaimEnd> {
-  const { subject } = handler.definition;
+  const { subject, pauseMs } = handler.definition;
   const givenUp = reason.final || claim.attempt >= claim.maxAttempts;
   try {
     await withRetries(() =>
@@ -136,7 +138,7 @@ export async function endFailed(
         await lockSubject(subject, claim.subjectId, transaction);
         await lockClaim(claim, transaction);
         if (!givenUp) {
-          const afterMs = backOffMs * 2 ** (claim.attempt - 1);
+          const afterMs = pauseMs?.(claim.attempt) ?? backOffMs * 2 ** (claim.attempt - 1);
           return putBack(claim, { afterMs, code: reason.code, detail: reason.detail }, transaction);
         }
         const said = { code: reason.code, detail: givenUpSentence(claim, subject, reason) };
@@ -162,6 +164,8 @@ const DOING: Record<string, string> = {
   'measure-image': 'measuring the image',
   'link-tracks': 'linking tracks',
   'measure-flow': 'measuring the flow',
+  'send-mail': 'sending a mail',
+  'check-files': 'checking stored files',
 };
 
 function whileDoing(claim: JobClaim, subject: JobSubject): string {

@@ -93,6 +93,10 @@ export const ACTIONS = {
       lab_administrator: 'yes',
     },
   },
+  // Work that failed is asked for again; what it was asked to do stays.
+  'run-again': { scope: 'write', grants: { principal_investigator: 'yes', lab_administrator: 'yes' } },
+  'check-files': { scope: 'write', grants: { lab_administrator: 'yes' } },
+  'see-mail': { scope: 'read', grants: { lab_administrator: 'yes' } },
   'manage-people': { scope: 'write', grants: { lab_administrator: 'yes' } },
   'own-tokens': {
     scope: 'write',

@@ -20,6 +20,7 @@ const LIMITS = {
   signInsPerAddress: 30,
   tryOutsAtOnce: 2,
   labBytes: 5e12,
+  nightlyCheckBytes: 100e9,
   childMemoryMB: 2048,
 } as const;
 

@@ -14,6 +14,7 @@ export class Membership extends Model<InferAttributes<Membership>, InferCreation
   declare labId: string;
   declare userId: string;
   declare roles: Role[];
+  declare noticesOff: CreationOptional<string[]>;
   declare revision: CreationOptional<number>;
   declare createdAt: CreationOptional<Date>;
   declare updatedAt: CreationOptional<Date>;
@@ -25,6 +26,7 @@ export class Membership extends Model<InferAttributes<Membership>, InferCreation
         labId: DataTypes.UUID,
         userId: DataTypes.UUID,
         roles: DataTypes.ARRAY(DataTypes.TEXT),
+        noticesOff: DataTypes.ARRAY(DataTypes.TEXT),
         revision: DataTypes.INTEGER,
         createdAt: DataTypes.DATE,
         updatedAt: DataTypes.DATE,

@@ -1,6 +1,9 @@
 import { dropOldKeys } from '@/auth/idempotency';
 import { log } from '@/auth/log';
 import { dropOldWindows } from '@/auth/rate-limit';
+import { askForNightlyChecks } from '@/jobs/check-files';
+import { limit } from '@/lib/env';
+import { dropOldMails } from '@/models/queries/mails';
 import { forgetEmptyFolders, reconcileUploads } from './uploads/reconcile-uploads';
 
 const EVERY_MS = 3_600_000;
@@ -19,6 +22,8 @@ export function startHousekeeping(): void {
       await forgetEmptyFolders();
       await dropOldWindows();
       await dropOldKeys();
+      await dropOldMails();
+      await askForNightlyChecks(new Date(), limit('nightlyCheckBytes'));
     } catch (err) {
       log.warn({ err }, 'housekeeping failed, tried again soon');
       nextMs = AGAIN_MS;

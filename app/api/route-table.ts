@@ -10,6 +10,7 @@ import * as analysis from '@/lib/views/analysis-view';
 import { campaignViewSchema } from '@/lib/views/campaign-view';
 import { listOf } from '@/lib/views/common';
 import * as lab from '@/lib/views/lab-view';
+import { mailItemViewSchema, mailViewSchema } from '@/lib/views/mail-view';
 import { recipeViewSchema } from '@/lib/views/recipe-view';
 import { recordingViewSchema, uploadViewSchema } from '@/lib/views/recording-view';
 import { runViewSchema } from '@/lib/views/run-view';
@@ -302,6 +303,16 @@ export const ROUTES = {
     status: 201,
     idempotent: false,
   },
+  'POST /people/{memberId}/sessions-end': {
+    action: 'manage-people',
+    summary: 'End every session of a member',
+    status: 204,
+  },
+  'POST /people/{memberId}/password-reset': {
+    action: 'manage-people',
+    summary: 'Mail a member a link with which they choose a new password',
+    status: 204,
+  },
   'GET /tokens': {
     action: 'own-tokens',
     summary: 'Your API tokens; an administrator sees everybody’s',
@@ -323,11 +334,22 @@ export const ROUTES = {
     query: lists.auditListQuery,
     answer: listOf(lab.auditViewSchema),
   },
+  'GET /audit.csv': {
+    action: 'see-audit',
+    summary: 'The same as a table, oldest first',
+    query: lists.auditTableQuery,
+    media: 'text/csv',
+  },
   'GET /jobs': {
     action: 'see-queue',
     summary: 'Work of the laboratory',
     query: lists.jobListQuery,
     answer: listOf(lab.jobViewSchema),
+  },
+  'POST /jobs/{jobId}/again': {
+    action: 'run-again',
+    summary: 'Run failed work again, or try at once what waits for its next try',
+    status: 204,
   },
   'GET /workers': {
     action: 'see-queue',
@@ -339,6 +361,29 @@ export const ROUTES = {
     action: 'see-storage',
     summary: 'What the recordings take on disk',
     answer: lab.storageViewSchema,
+  },
+  'GET /file-checks': {
+    action: 'see-storage',
+    summary: 'What the checks of stored files have seen, newest first',
+    query: lists.fileCheckListQuery,
+    answer: listOf(lab.fileCheckViewSchema),
+  },
+  'POST /file-checks': {
+    action: 'check-files',
+    summary: 'Check a sample of the stored files now',
+    answer: lab.storageViewSchema,
+    status: 202,
+  },
+  'GET /mail': {
+    action: 'see-mail',
+    summary: 'Mail of the laboratory, newest first',
+    query: lists.mailListQuery,
+    answer: listOf(mailItemViewSchema),
+  },
+  'GET /mail/{mailId}': {
+    action: 'see-mail',
+    summary: 'A mail, with its words where there is no mail server and they were kept here',
+    answer: mailViewSchema,
   },
 } as const satisfies Record<string, ApiRoute>;
 

@@ -1,4 +1,5 @@
 import type { Metadata } from 'next';
+import Link from 'next/link';
 import { safeDestination } from '@/components/sign-in/destination';
 import { SignInForm } from '@/components/sign-in/sign-in-form';
 import { SpectralLines } from '@/components/sign-in/spectral-lines';
@@ -24,7 +25,8 @@ export default async function SignInPage({
         </h1>
         <SignInForm destination={safeDestination(next ?? callbackUrl)} />
         <p className="pt-6 text-note text-ink-2">
-          No account, or no password any more? Your laboratory&rsquo;s administrator sends invitations.
+          Password forgotten? <Link href="/new-password">Have a link sent</Link>. No account? Your
+          laboratory&rsquo;s administrator sends invitations.
         </p>
       </div>
     </main>

@@ -7,15 +7,15 @@ import { Button } from '@/components/ui/button';
 import { Field } from '@/components/ui/field';
 import { ErrorState } from '@/components/ui/page-states';
 
-export type AcceptResult = { ok: true } | { ok: false; detail: string };
+export type ChooseResult = { ok: true } | { ok: false; detail: string };
 
-/** Chooses the first password of an account and signs its person in. */
-export function InvitationForm({
+/** Chooses the password of an account by a link and signs its person in. */
+export function ChoosePasswordForm({
   email,
-  accept,
+  choose,
 }: {
   email: string;
-  accept: (password: string) => Promise<AcceptResult>;
+  choose: (password: string) => Promise<ChooseResult>;
 }) {
   const router = useRouter();
   const [password, setPassword] = useState('');
@@ -27,7 +27,7 @@ export function InvitationForm({
     setBusy(true);
     setProblem(null);
     try {
-      const result = await accept(password);
+      const result = await choose(password);
       if (!result.ok) {
         setProblem(result.detail);
         return;

@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { MAIL_STATES } from '../mail/mail-kinds';
 
 export const LIST_LIMIT = 50;
 export const LIST_LIMIT_MAX = 200;
@@ -44,6 +45,8 @@ const deleted = z.enum(['no', 'only'], "deleted must be 'no' or 'only'.").defaul
 
 const states = <const T extends readonly [string, ...string[]]>(all: T) =>
   z.enum(all, `state must be one of ${all.join(', ')}.`).optional();
+
+const day = (name: string) => z.iso.date(`${name} must be a day like 2026-03-31.`).optional();
 
 const idFilter = (name: string) => z.uuid(`${name} must be an id.`).optional();
 
@@ -92,12 +95,31 @@ export const jobListQuery = listQuery(['createdAt', 'updatedAt'], {
   kind: text,
 });
 /** `action` is one kind of act, as `run.removed`, or all about one kind of thing, as `run`. */
-export const auditListQuery = listQuery(['createdAt'], {
+const auditFilters = {
   action: z
     .string()
     .regex(/^[a-z-]{1,40}(\.[a-z-]{1,40})?$/, 'action must be like run.removed, or run.')
     .optional(),
   person: idFilter('person'),
+  /** Words in the name of who did it, of what it was done to, or in what was done. */
+  q: text,
+  /** Days (UTC), both included. */
+  from: day('from'),
+  to: day('to'),
+};
+export const auditListQuery = listQuery(['createdAt'], auditFilters);
+/** The same choice as a table, oldest first. */
+export const auditTableQuery = z.strictObject(auditFilters);
+export type AuditFilters = z.output<typeof auditTableQuery>;
+
+export const mailListQuery = listQuery(['createdAt'], { q: text, state: states(MAIL_STATES) });
+export const fileCheckListQuery = listQuery(['checkedAt'], {
+  state: z
+    .enum(
+      ['intact', 'damaged', 'missing', 'not-intact'],
+      'state must be intact, damaged, missing or not-intact.',
+    )
+    .optional(),
 });
 export const workerListQuery = listQuery(['startedAt', 'heartbeatAt'], {});
 export const uploadListQuery = listQuery(['createdAt'], {});

@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { ROLES, SCOPES } from '../access';
+import { MAIL_STATES } from '../mail/mail-kinds';
 import { itemFields, personSchema } from './common';
 
 export const meViewSchema = z.object({
@@ -21,6 +22,8 @@ export const memberViewSchema = z.object({
   roles: z.array(z.enum(ROLES)),
   /** Null once the person has chosen a password; before that, when the invitation ends or ended. */
   invitedUntil: z.iso.datetime().nullable(),
+  /** How the mail of the newest invitation fares; null where none was asked for. */
+  invitationMail: z.object({ state: z.enum(MAIL_STATES), delayed: z.boolean() }).nullable(),
 });
 export type MemberView = z.infer<typeof memberViewSchema>;
 
@@ -64,8 +67,11 @@ export const workerViewSchema = z.object({
   pid: z.int(),
   startedAt: z.iso.datetime(),
   heartbeatAt: z.iso.datetime(),
+  /** Since the last sign of life, by the clock of the database, s. */
+  silent_s: z.number(),
   alive: z.boolean(),
-  job: z.object({ kind: z.string(), chunk: z.int() }).nullable(),
+  codeVersion: z.string(),
+  job: z.object({ kind: z.string(), chunk: z.int(), progress: z.number() }).nullable(),
 });
 export type WorkerView = z.infer<typeof workerViewSchema>;
 
@@ -73,9 +79,14 @@ export const jobViewSchema = z.object({
   id: z.uuid(),
   kind: z.string(),
   subjectId: z.uuid(),
+  /** Name of the recording that it is about; null for work on something else. */
+  recordingName: z.string().nullable(),
   chunk: z.int(),
   state: z.enum(['waiting', 'running', 'done', 'failed', 'stopped']),
   attempt: z.int(),
+  attemptsMost: z.int(),
+  /** When it is tried again, while it waits for that. */
+  nextAt: z.iso.datetime().nullable(),
   progress: z.number(),
   error: z.object({ code: z.string(), detail: z.string() }).nullable(),
   createdAt: z.iso.datetime(),
@@ -90,5 +101,24 @@ export const storageViewSchema = z.object({
   freeBytes: z.int().nullable(),
   /** What the laboratory may keep. */
   quotaBytes: z.int(),
+  /** What the checks of stored files have seen. */
+  checks: z.object({
+    checked: z.int(),
+    /** Ready recordings that nobody has looked at yet. */
+    unchecked: z.int(),
+    notIntact: z.int(),
+    lastAt: z.iso.datetime().nullable(),
+    underWay: z.boolean(),
+  }),
 });
 export type StorageView = z.infer<typeof storageViewSchema>;
+
+export const fileCheckViewSchema = z.object({
+  recording: z.object({ id: z.uuid(), name: z.string() }),
+  state: z.enum(['intact', 'damaged', 'missing']),
+  detail: z.string().nullable(),
+  bytes: z.int(),
+  checkedAt: z.iso.datetime(),
+  since: z.iso.datetime().nullable(),
+});
+export type FileCheckView = z.infer<typeof fileCheckViewSchema>;

@@ -4,6 +4,7 @@ import { newId } from '@/lib/ids';
 import type { MemberCreate } from '@/lib/schemas/lab';
 import type { MemberView } from '@/lib/views/lab-view';
 import { getSequelize } from '../database';
+import { closeLinks } from './account-links';
 import { getMember } from './people';
 import { execute, selectRow } from './select';
 import { writeAudit } from './write-audit';
@@ -24,6 +25,12 @@ interface Account {
   elsewhere: boolean;
 }
 
+/** Told in the transaction that made somebody a member or invited them again. */
+export type InvitationTeller = (
+  account: { userId: string; opens: boolean },
+  transaction: Transaction,
+) => Promise<void>;
+
 /**
  * Makes a person a member, and their account where there is none. The invitation opens an account that has no
  * password; never one that another laboratory has invited, which its link would hand over.
@@ -35,6 +42,7 @@ export async function addMember(
   { name, email, roles }: MemberCreate,
   invitation: OpenInvitation,
   byUserId: string,
+  tell: InvitationTeller,
 ): Promise<{ member: MemberView; invited: boolean }> {
   const id = newId();
   const invited = await getSequelize().transaction(async (transaction) => {
@@ -59,6 +67,8 @@ export async function addMember(
       { labId, userId: byUserId, ...what, detail: { name: account.name, email, roles } },
       transaction,
     );
+    // Another laboratory's invitation opens the account: ours has nothing to tell that it doesn't.
+    if (opens || account.has_password) await tell({ userId: account.id, opens }, transaction);
     return opens;
   });
   return { member: await getMember(labId, id), invited };
@@ -73,6 +83,7 @@ export async function renewInvitation(
   memberId: string,
   invitation: OpenInvitation,
   byUserId: string,
+  tell: InvitationTeller,
 ): Promise<void> {
   const { person } = await getMember(labId, memberId);
   await getSequelize().transaction(async (transaction) => {
@@ -89,6 +100,7 @@ export async function renewInvitation(
       { labId, userId: byUserId, ...what, detail: { name: person.name, email: person.email } },
       transaction,
     );
+    await tell({ userId: person.id, opens: true }, transaction);
   });
 }
 
@@ -104,9 +116,15 @@ function lockAccount(where: string, bind: [string, string], transaction: Transac
   );
 }
 
-const openInvitation = (userId: string, { hash, expiresAt }: OpenInvitation, transaction: Transaction) =>
-  execute(
+async function openInvitation(
+  userId: string,
+  { hash, expiresAt }: OpenInvitation,
+  transaction: Transaction,
+): Promise<void> {
+  await closeLinks(userId, 'invitation', transaction);
+  await execute(
     'UPDATE users SET invitation_hash = $2, invitation_expires_at = $3, updated_at = now() WHERE id = $1',
     [userId, hash, expiresAt],
     transaction,
   );
+}

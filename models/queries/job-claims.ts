@@ -23,8 +23,8 @@ export class LostClaimError extends Error {
 }
 
 /**
- * Takes the next piece of work that is due: checks of new stacks first, since people wait for them,
- * then in the order in which the work was asked for, chunks in order.
+ * Takes the next piece of work that is due: mail first, which takes a moment and for which people wait; then checks
+ * of new stacks, for which they wait too; then in the order in which the work was asked for, chunks in order.
  */
 export async function claimNextJob(workerId: string): Promise<JobClaim | null> {
   const rows = await getSequelize().query<JobClaim>(
@@ -32,7 +32,7 @@ export async function claimNextJob(workerId: string): Promise<JobClaim | null> {
        started_at = now(), progress = 0, error_code = NULL, error_detail = NULL, updated_at = now()
      WHERE id = (
        SELECT id FROM job_runs WHERE state = 'waiting' AND not_before <= now()
-       ORDER BY (kind <> 'ingest-recording'), created_at, chunk LIMIT 1
+       ORDER BY (kind <> 'send-mail'), (kind <> 'ingest-recording'), (kind = 'check-files'), created_at, chunk LIMIT 1
        FOR UPDATE SKIP LOCKED)
      RETURNING id, lab_id AS "labId", kind, subject_id AS "subjectId", chunk, payload, attempt,
        max_attempts AS "maxAttempts", worker_id AS "workerId"`,

@@ -3,6 +3,7 @@ import type { jobListQuery, workerListQuery } from '@/lib/schemas/list-query';
 import type { ListView } from '@/lib/views/common';
 import type { JobView, WorkerView } from '@/lib/views/lab-view';
 import { listPage } from './list-page';
+import { iso } from './person';
 
 interface JobRow {
   id: string;
@@ -11,6 +12,9 @@ interface JobRow {
   chunk: number;
   state: JobView['state'];
   attempt: number;
+  attempts_most: number;
+  next_at: Date | null;
+  recording_name: string | null;
   progress: number;
   error_code: string | null;
   error_detail: string | null;
@@ -29,8 +33,12 @@ export async function listJobs(
   if (query.kind) where.push(`j.kind = $${bind.push(query.kind)}`);
   const page = await listPage<JobRow>(
     {
-      select: `j.id, j.kind, j.subject_id, j.chunk, j.state, j.attempt, j.progress, j.error_code, j.error_detail,
-        j.created_at, j.updated_at`,
+      select: `j.id, j.kind, j.subject_id, j.chunk, j.state, j.attempt, j.max_attempts AS attempts_most, j.progress,
+        j.error_code, j.error_detail, j.created_at, j.updated_at,
+        CASE WHEN j.state = 'waiting' AND j.not_before > now() THEN j.not_before END AS next_at,
+        coalesce((SELECT g.name FROM recordings g WHERE g.id = j.subject_id AND g.lab_id = j.lab_id),
+          (SELECT g.name FROM analyses a JOIN recordings g ON g.id = a.recording_id
+           WHERE a.id = j.subject_id AND a.lab_id = j.lab_id)) AS recording_name`,
       from: 'job_runs j',
       where,
       bind,
@@ -46,9 +54,12 @@ export async function listJobs(
     id: row.id,
     kind: row.kind,
     subjectId: row.subject_id,
+    recordingName: row.recording_name,
     chunk: row.chunk,
     state: row.state,
     attempt: row.attempt,
+    attemptsMost: row.attempts_most,
+    nextAt: iso(row.next_at),
     progress: row.progress,
     error: row.error_code ? { code: row.error_code, detail: row.error_detail ?? '' } : null,
     createdAt: row.created_at.toISOString(),
@@ -63,7 +74,9 @@ interface WorkerRow {
   pid: number;
   started_at: Date;
   heartbeat_at: Date;
+  silent_s: number;
   alive: boolean;
+  code_version: string;
   job: WorkerView['job'];
 }
 
@@ -74,9 +87,10 @@ export async function listWorkers(
 ): Promise<ListView<WorkerView>> {
   const page = await listPage<WorkerRow>(
     {
-      select: `w.id, w.host, w.pid, w.started_at, w.heartbeat_at,
+      select: `w.id, w.host, w.pid, w.started_at, w.heartbeat_at, w.code_version,
+        extract(epoch FROM now() - w.heartbeat_at)::float8 AS silent_s,
         w.stopped_at IS NULL AND w.heartbeat_at > now() - interval '20 seconds' AS alive,
-        (SELECT json_build_object('kind', j.kind, 'chunk', j.chunk) FROM job_runs j
+        (SELECT json_build_object('kind', j.kind, 'chunk', j.chunk, 'progress', j.progress) FROM job_runs j
          WHERE j.id = w.job_run_id AND j.lab_id = $1 AND j.state = 'running') AS job`,
       from: 'workers w',
       where: ['$1::uuid IS NOT NULL'],
@@ -95,7 +109,9 @@ export async function listWorkers(
     pid: row.pid,
     startedAt: row.started_at.toISOString(),
     heartbeatAt: row.heartbeat_at.toISOString(),
+    silent_s: Math.max(0, row.silent_s),
     alive: row.alive,
+    codeVersion: row.code_version,
     job: row.job,
   }));
   return { items, nextCursor: page.nextCursor };

@@ -1,9 +1,11 @@
 import type { z } from 'zod';
-import type { auditListQuery } from '@/lib/schemas/list-query';
+import { AUDIT_WORDS } from '@/lib/audit-words';
+import type { AuditFilters, auditListQuery } from '@/lib/schemas/list-query';
 import type { ListView, PersonView } from '@/lib/views/common';
 import type { AuditView } from '@/lib/views/lab-view';
-import { listPage } from './list-page';
+import { containing, listPage } from './list-page';
 import { personJson } from './person';
+import { selectRows } from './select';
 
 interface Row {
   id: string;
@@ -26,10 +28,43 @@ const SUBJECT_NAME = `CASE
   ${named('recording', 's.name FROM recordings s')}
   ${named('token', 's.name FROM api_tokens s')}
   ${named('analysis', '(SELECT r.name FROM recordings r WHERE r.id = s.recording_id) FROM analyses s')}
+  WHEN a.subject_kind = 'mail' THEN a.detail->>'to'
   WHEN a.subject_kind = 'membership' THEN coalesce(
     (SELECT p.name FROM memberships s JOIN users p ON p.id = s.user_id
      WHERE s.id::text = a.subject_id AND s.lab_id = a.lab_id), a.detail->>'name', a.detail->>'email')
   END`;
+
+const FROM = 'audit_entries a LEFT JOIN users u ON u.id = a.user_id';
+const SELECT = `a.id, a.action, a.subject_kind, a.subject_id, ${SUBJECT_NAME} AS subject_name, a.detail,
+  a.created_at, ${personJson('u')} AS person`;
+
+/** @param ownerId only what this person did; null for everybody's */
+function chosen(labId: string, ownerId: string | null, filters: AuditFilters) {
+  const bind: unknown[] = [labId];
+  const where = ['a.lab_id = $1'];
+  if (ownerId) where.push(`a.user_id = $${bind.push(ownerId)}`);
+  if (filters.person) where.push(`a.user_id = $${bind.push(filters.person)}`);
+  if (filters.action) {
+    const at = bind.push(filters.action);
+    where.push(`(a.action = $${at} OR split_part(a.action, '.', 1) = $${at})`);
+  }
+  if (filters.from) where.push(`a.created_at >= $${bind.push(filters.from)}::date AT TIME ZONE 'UTC'`);
+  if (filters.to) where.push(`a.created_at < ($${bind.push(filters.to)}::date + 1) AT TIME ZONE 'UTC'`);
+  if (filters.q) {
+    const [text, actions] = [bind.push(containing(filters.q)), bind.push(actionsSaid(filters.q))];
+    where.push(
+      `(u.name ILIKE $${text} OR u.email ILIKE $${text} OR ${SUBJECT_NAME} ILIKE $${text}
+        OR a.detail::text ILIKE $${text} OR a.action = ANY($${actions}::text[]))`,
+    );
+  }
+  return { bind, where };
+}
+
+/** Acts whose words, as people read them, hold the text. */
+const actionsSaid = (text: string): string[] =>
+  Object.entries(AUDIT_WORDS).flatMap(([action, words]) =>
+    words.includes(text.toLowerCase()) ? [action] : [],
+  );
 
 /**
  * What was done in a laboratory, newest first.
@@ -40,27 +75,42 @@ export async function listAudit(
   ownerId: string | null,
   query: z.output<typeof auditListQuery>,
 ): Promise<ListView<AuditView>> {
-  const bind: unknown[] = [labId];
-  const where = ['a.lab_id = $1'];
-  if (ownerId) where.push(`a.user_id = $${bind.push(ownerId)}`);
-  if (query.person) where.push(`a.user_id = $${bind.push(query.person)}`);
-  if (query.action) {
-    const at = bind.push(query.action);
-    where.push(`(a.action = $${at} OR split_part(a.action, '.', 1) = $${at})`);
-  }
   const page = await listPage<Row>(
     {
-      select: `a.id, a.action, a.subject_kind, a.subject_id, ${SUBJECT_NAME} AS subject_name, a.detail,
-        a.created_at, ${personJson('u')} AS person`,
-      from: 'audit_entries a LEFT JOIN users u ON u.id = a.user_id',
-      where,
-      bind,
+      select: SELECT,
+      from: FROM,
+      ...chosen(labId, ownerId, query),
       idColumn: 'a.id',
       sorts: { createdAt: { by: 'a.created_at', type: 'timestamptz' } },
     },
     query,
   );
   return { items: page.rows.map(viewOf), nextCursor: page.nextCursor };
+}
+
+const PIECE_ROWS = 1_000;
+
+/** The same, oldest first and piece by piece, however many they are. */
+export async function* streamAudit(
+  labId: string,
+  ownerId: string | null,
+  filters: AuditFilters,
+): AsyncGenerator<AuditView> {
+  let after: [string, string] | null = null;
+  for (;;) {
+    const { bind, where } = chosen(labId, ownerId, filters);
+    if (after) where.push(`(a.created_at, a.id) > ($${bind.push(after[0])}::timestamptz, $${bind.push(after[1])}::uuid)`); // prettier-ignore
+    // Times in JavaScript end at milliseconds: the key must be as fine as the column.
+    const rows: (Row & { key: string })[] = await selectRows(
+      `SELECT ${SELECT}, a.created_at::text AS key FROM ${FROM} WHERE ${where.join(' AND ')}
+       ORDER BY a.created_at, a.id LIMIT ${PIECE_ROWS}`,
+      bind,
+    );
+    yield* rows.map(viewOf);
+    const last = rows.at(-1);
+    if (!last || rows.length < PIECE_ROWS) return;
+    after = [last.key, last.id];
+  }
 }
 
 const viewOf = (row: Row): AuditView => ({

@@ -1,6 +1,7 @@
+import type { Transaction } from 'sequelize';
 import { getSequelize } from '../database';
-import { execute, selectRow } from './select';
-import { writeAudit } from './write-audit';
+import { storePassword } from './account-links';
+import { selectRow } from './select';
 
 /** The stored hash of a person's password; null before the first. */
 export async function passwordHashOf(userId: string): Promise<string | null> {
@@ -11,34 +12,23 @@ export async function passwordHashOf(userId: string): Promise<string | null> {
   return row?.hash ?? null;
 }
 
-/** Stores a new password and ends every session of the person; an open invitation is used up. */
+/** A person's own change of their password. @param then in the same transaction */
 export async function setPassword(
-  person: { userId: string; labId: string | null },
+  person: { userId: string; labId: string },
   passwordHash: string,
+  then: (transaction: Transaction) => Promise<void>,
 ): Promise<void> {
   await getSequelize().transaction(async (transaction) => {
-    await execute(
-      `UPDATE users SET password_hash = $2, session_version = session_version + 1, invitation_hash = NULL,
-         invitation_expires_at = NULL, updated_at = now() WHERE id = $1`,
-      [person.userId, passwordHash],
-      transaction,
-    );
-    const entry = { action: 'user.password-set', subjectKind: 'user', subjectId: person.userId };
-    await writeAudit({ labId: person.labId, userId: person.userId, ...entry }, transaction);
+    await storePassword(person, passwordHash, transaction);
+    await then(transaction);
   });
 }
 
-export interface Invited {
-  userId: string;
-  name: string;
-  email: string;
-}
-
-/** The person whose invitation has this hash and is still open; null for any other. */
-export async function findInvited(invitationHash: Buffer): Promise<Invited | null> {
-  return selectRow<Invited>(
-    `SELECT id AS "userId", name, email FROM users
-     WHERE invitation_hash = $1 AND invitation_expires_at > now() AND disabled_at IS NULL`,
-    [invitationHash],
+/** An account that can have a new password: in use, with a password and a laboratory. */
+export async function findResettable(email: string): Promise<{ userId: string } | null> {
+  return selectRow<{ userId: string }>(
+    `SELECT u.id AS "userId" FROM users u WHERE lower(u.email) = lower($1) AND u.disabled_at IS NULL
+       AND u.password_hash IS NOT NULL AND EXISTS (SELECT FROM memberships m WHERE m.user_id = u.id)`,
+    [email],
   );
 }

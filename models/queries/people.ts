@@ -15,11 +15,17 @@ interface Row extends ItemRow {
   person: PersonView & { email: string };
   roles: Role[];
   invited_until: Date | null;
+  invitation_mail: MemberView['invitationMail'];
 }
 
 const SELECT = `m.id, m.roles, m.revision, m.created_at, m.updated_at,
   json_build_object('id', u.id, 'name', u.name, 'email', u.email) AS person,
-  CASE WHEN u.password_hash IS NULL THEN coalesce(u.invitation_expires_at, u.created_at) END AS invited_until`;
+  CASE WHEN u.password_hash IS NULL THEN coalesce(u.invitation_expires_at, u.created_at) END AS invited_until,
+  CASE WHEN u.password_hash IS NULL THEN (
+    SELECT json_build_object('state', x.state, 'delayed', x.state = 'waiting' AND EXISTS (
+      SELECT FROM job_runs j WHERE j.subject_id = x.id AND j.kind = 'send-mail' AND j.error_detail IS NOT NULL))
+    FROM mails x WHERE x.user_id = u.id AND x.lab_id = m.lab_id AND x.kind = 'invitation'
+    ORDER BY x.created_at DESC LIMIT 1) END AS invitation_mail`;
 const FROM = 'memberships m JOIN users u ON u.id = m.user_id';
 
 const viewOf = (row: Row): MemberView => ({
@@ -27,6 +33,7 @@ const viewOf = (row: Row): MemberView => ({
   person: row.person,
   roles: row.roles,
   invitedUntil: iso(row.invited_until),
+  invitationMail: row.invitation_mail,
 });
 
 export async function listMembers(

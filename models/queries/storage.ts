@@ -1,6 +1,7 @@
 import { statfs } from 'node:fs/promises';
 import { dataDir } from '@/lib/env';
 import type { StorageView } from '@/lib/views/lab-view';
+import { fileCheckSummary } from './file-checks';
 import { KEPT_RECORDING, quotaOf } from './quota';
 import { selectRow } from './select';
 
@@ -25,5 +26,6 @@ export async function labStorage(labId: string): Promise<StorageView> {
     arrivingBytes: Number(row?.arriving ?? 0),
     freeBytes: await freeBytes(),
     quotaBytes: await quotaOf(labId),
+    checks: await fileCheckSummary(labId),
   };
 }

@@ -2,9 +2,9 @@ import { execFile } from 'node:child_process';
 import { join } from 'node:path';
 import { promisify } from 'node:util';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { hashInvitation } from '@/auth/invitations';
+import { hashLinkSecret } from '@/lib/link-secret';
 import { hashToken } from '@/auth/tokens';
-import { findInvited } from '@/models/queries/passwords';
+import { findLinkOwner } from '@/models/queries/account-links';
 import { models } from '@/models';
 import { freshDatabase, type FreshDatabase } from '../helpers/fresh-database';
 import { makeTestLab, type TestLab } from '../helpers/test-lab';
@@ -69,7 +69,9 @@ describe('the lab command', () => {
   it('makes a laboratory and prints an invitation that opens the account', async () => {
     const { stdout } = await run('lab', '--name', 'Vortex Lab, Åbo', '--email', 'first@abo.test');
     const link = /^http:\/\/lab\.test\/invitation\/(\S+)\n$/.exec(stdout);
-    expect(await findInvited(hashInvitation(link![1]))).toMatchObject({ email: 'first@abo.test' });
+    expect(await findLinkOwner(hashLinkSecret(link![1]), 'invitation')).toMatchObject({
+      email: 'first@abo.test',
+    });
     const made = await models().Lab.findOne({ where: { name: 'Vortex Lab, Åbo' } });
     expect(made?.slug).toBe('vortex-lab-abo');
     expect(await models().Membership.count({ where: { labId: made!.id } })).toBe(1);

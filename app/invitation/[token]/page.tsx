@@ -1,15 +1,15 @@
 import type { Metadata } from 'next';
-import { hashInvitation } from '@/auth/invitations';
-import { InvitationForm } from '@/components/invitation/invitation-form';
+import { hashLinkSecret } from '@/lib/link-secret';
+import { ChoosePasswordForm } from '@/components/account/choose-password-form';
 import { PlainPage } from '@/components/shell/plain-page';
-import { findInvited } from '@/models/queries/passwords';
+import { findLinkOwner } from '@/models/queries/account-links';
 import { acceptInvitation } from './actions';
 
 export const metadata: Metadata = { title: 'Invitation' };
 
 export default async function InvitationPage({ params }: { params: Promise<{ token: string }> }) {
   const { token } = await params;
-  const invited = await findInvited(hashInvitation(token));
+  const invited = await findLinkOwner(hashLinkSecret(token), 'invitation');
   if (!invited) {
     return (
       <PlainPage title="This invitation is not open">
@@ -24,7 +24,7 @@ export default async function InvitationPage({ params }: { params: Promise<{ tok
       <p>
         Choose the password for {invited.email}. Long is good; a few words that belong together only for you.
       </p>
-      <InvitationForm email={invited.email} accept={acceptInvitation.bind(null, token)} />
+      <ChoosePasswordForm email={invited.email} choose={acceptInvitation.bind(null, token)} />
     </PlainPage>
   );
 }

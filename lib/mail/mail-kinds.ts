@@ -1,0 +1,38 @@
+/** What a mail can be about, with what its words are made of. Secrets of links are added when it is sent. */
+export type MailOrder =
+  | { kind: 'invitation'; byName: string }
+  | { kind: 'membership'; byName: string }
+  | { kind: 'password-reset'; byName: string | null }
+  | { kind: 'password-changed' }
+  | { kind: 'analysis-done'; analysisId: string; recordingName: string; runName: string }
+  | { kind: 'analysis-failed'; analysisId: string; recordingName: string; runName: string; detail: string }
+  | { kind: 'files-damaged'; recordings: string[] };
+
+export type MailKind = MailOrder['kind'];
+
+/** What the administrator's list calls each kind. */
+export const MAIL_KIND_WORDS: Record<MailKind, string> = {
+  invitation: 'invitation',
+  membership: 'new membership',
+  'password-reset': 'link for a new password',
+  'password-changed': 'password was changed',
+  'analysis-done': 'analysis done',
+  'analysis-failed': 'analysis failed',
+  'files-damaged': 'stored files damaged',
+};
+
+/** Notices that a member may do without; everything else concerns their account or their duty. */
+export const NOTICE_KINDS = ['analysis-done', 'analysis-failed'] as const;
+export type NoticeKind = (typeof NOTICE_KINDS)[number];
+
+export const NOTICE_WORDS: Record<NoticeKind, string> = {
+  'analysis-done': 'An analysis that I started is done',
+  'analysis-failed': 'An analysis that I started has failed',
+};
+
+/** Mails with a link that opens an account. */
+export const LINK_KINDS: readonly MailKind[] = ['invitation', 'password-reset'];
+
+/** Where a mail stands: `kept` in the mail folder for want of a mail server, `dropped` as nobody needs it any more. */
+export const MAIL_STATES = ['waiting', 'sent', 'kept', 'dropped', 'failed'] as const;
+export type MailState = (typeof MAIL_STATES)[number];
