@@ -6,6 +6,7 @@ import { SpotTable } from './detection/spot-table';
 import { levelForFalseMaxima } from './detection/threshold';
 import type { Kernels } from './kernels/kernels';
 import { plainKernels } from './kernels/plain-kernels';
+import { backgroundOfFrame } from './image-model/background-of-frame';
 import type { SpotSink } from './spots';
 import {
   SPOT_EDGE,
@@ -74,7 +75,8 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
   let order = new Int32Array(0);
 
   /** Electrons, what can be used of them, and the frame in units of its noise. */
-  const prepare = ({ counts }: Frame) => {
+  const prepare = ({ counts }: Frame, frameIndex: number) => {
+    if (model.backgroundDrift) backgroundOfFrame(model, frameIndex, pictures.background);
     pictures.toElectrons(counts, countScale);
     const { electrons, background, usable } = pictures;
     pictures.respond(measureLightLevel(electrons, background, usable, readVariance), readVariance);
@@ -206,7 +208,7 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
         `A frame of ${frame.width} x ${frame.height} px came when ${width} x ${height} were expected.`,
       );
     }
-    prepare(frame);
+    prepare(frame, frameIndex);
     propose();
     fitGroups();
     table.index(width, height, Math.max(TOGETHER_SIGMAS, OVERLAP_SIGMAS) * sigma);
