@@ -1,9 +1,11 @@
 import { createGroupFitter } from './detection/group-fitter';
 import { JOINT_SPOTS_MOST } from './detection/fit-work';
-import { measureLightLevel } from './detection/light-level';
-import { createSpotPainter } from './detection/spot-painter';
+import { createPlainSpotFits } from './detection/plain-spot-fits';
+import { createSpotKernel } from './detection/spot-kernel';
 import { SpotTable } from './detection/spot-table';
 import { levelForFalseMaxima } from './detection/threshold';
+import { jointFitRoom } from './kernels/joint-fit-memory';
+import { createSimdSpotFits } from './kernels/joint-fit-simd';
 import type { Kernels } from './kernels/kernels';
 import { plainKernels } from './kernels/plain-kernels';
 import { backgroundOfFrame } from './image-model/background-of-frame';
@@ -62,13 +64,17 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
   const level = levelForFalseMaxima(recipe.falseSpotsPerFrame, sigma, pixels);
   const lookTwice = recipe.effort === 'full';
 
-  const pictures = kernels.forImages({ width, height, spotSigmaPx: sigma });
+  const room = jointFitRoom(reach, createSpotKernel(sigma).reach, TOGETHER_SIGMAS * sigma);
+  const pictures = kernels.forImages({ width, height, spotSigmaPx: sigma, scratchBytes: room.bytes });
   pictures.bad.set(badPixels);
   pictures.background.set(backgroundE);
   const { response } = pictures;
   const countScale = { offsetCounts, perCount: 1 / recipe.gain, saturationCounts };
-  const painter = createSpotPainter(width, height, sigma, reach);
-  const fitter = createGroupFitter({ width, height, spotSigmaPx: sigma, readVariance, reach }, painter);
+  const fitsOptions = { width, height, spotSigmaPx: sigma, readVariance, reach };
+  const fits = pictures.compiled
+    ? createSimdSpotFits(pictures.compiled, pictures.kernel, fitsOptions, room)
+    : createPlainSpotFits(pictures, fitsOptions);
+  const fitter = createGroupFitter({ ...fitsOptions, bare: pictures.bare }, fits);
   const table = new SpotTable();
   const near = new Int32Array(64);
   const members = new Int32Array(JOINT_SPOTS_MOST);
@@ -78,8 +84,7 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
   const prepare = ({ counts }: Frame, frameIndex: number) => {
     if (model.backgroundDrift) backgroundOfFrame(model, frameIndex, pictures.background);
     pictures.toElectrons(counts, countScale);
-    const { electrons, background, usable } = pictures;
-    pictures.respond(measureLightLevel(electrons, background, usable, readVariance), readVariance);
+    pictures.respond(pictures.lightLevel(readVariance), readVariance);
   };
 
   const propose = () => {
@@ -93,7 +98,7 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
       const brightness = (response[at] * noise) / pictures.kernel.squares;
       table.add(x + subPixel(at, 1, x, width), y + subPixel(at, width, y, height), brightness, response[at]);
     }
-    for (let i = 0; i < table.count; i++) painter.paint(pictures.model, table.x[i], table.y[i], table.n[i]);
+    for (let i = 0; i < table.count; i++) fits.paint(table.x[i], table.y[i], table.n[i]);
   };
 
   /** Vertex of the parabola through the response at a maximum and its two neighbours along an axis. */
@@ -155,7 +160,7 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
       setOffsetSpread(seed);
       // A lone faint maximum must gain the likelihood that the level stands for.
       const aloneLeast = table.response[seed] > level + LEVEL_SURE ? 0 : level * level;
-      fitter.fit(table, members, count, pictures, lookTwice, aloneLeast, gainLeast);
+      fitter.fit(table, members, count, lookTwice, aloneLeast, gainLeast);
     }
     if (lookTwice) refitNextToOthers(cell);
   };
@@ -176,7 +181,7 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
       }
       if (!others) continue;
       setOffsetSpread(i);
-      fitter.fit(table, members, count, pictures, false, 0, 0);
+      fitter.fit(table, members, count, false, 0, 0);
     }
   };
 

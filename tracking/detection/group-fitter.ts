@@ -1,27 +1,16 @@
-import { measureElongation, type Elongation } from './elongation';
-import { FitWindow } from './fit-window';
 import { JOINT_SPOTS_MOST } from './fit-work';
-import { JointFit } from './joint-fit';
-import { createSecondLook, DARK_VARIANCE_E2, SHAPE_ERROR } from './second-look';
+import { DARK_VARIANCE_E2, SHAPE_ERROR } from './second-look';
 import { createSpotKernel } from './spot-kernel';
-import type { SpotPainter } from './spot-painter';
+import type { SpotFits } from './spot-fits';
 import type { SpotTable } from './spot-table';
-
-/** Pictures of the frame at hand, in photoelectrons; `model` is kept up to date with the spots. */
-export interface FramePictures {
-  electrons: Float32Array;
-  usable: Uint8Array;
-  /** Expected light without spots, and with all that are known. */
-  bare: Float32Array;
-  model: Float32Array;
-}
 
 export interface GroupFitterOptions {
   width: number;
   height: number;
   spotSigmaPx: number;
   readVariance: number;
-  reach: number;
+  /** Expected light without spots of the frame at hand, electrons. */
+  bare: Float32Array;
 }
 
 /** A spot of a group whose brightness is not this many standard errors above 0 is dropped. */
@@ -44,7 +33,6 @@ export interface GroupFitter {
     table: SpotTable,
     members: Int32Array,
     count: number,
-    pictures: FramePictures,
     lookTwice: boolean,
     aloneLeast: number,
     gainLeast: number,
@@ -53,55 +41,37 @@ export interface GroupFitter {
   setOffsetSpread(spreadE: number): void;
 }
 
-export function createGroupFitter(options: GroupFitterOptions, painter: SpotPainter): GroupFitter {
-  const { width, height, spotSigmaPx, readVariance, reach } = options;
-  const window = new FitWindow();
-  const joint = new JointFit(spotSigmaPx, reach, 1);
-  const look = createSecondLook(spotSigmaPx, readVariance);
+export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits): GroupFitter {
+  const { width, height, spotSigmaPx, readVariance, bare } = options;
   const { squares } = createSpotKernel(spotSigmaPx);
-  const centresX = new Float64Array(JOINT_SPOTS_MOST);
-  const centresY = new Float64Array(JOINT_SPOTS_MOST);
   const bestX = new Float64Array(JOINT_SPOTS_MOST);
   const bestY = new Float64Array(JOINT_SPOTS_MOST);
   const bestN = new Float64Array(JOINT_SPOTS_MOST);
-
-  const elongation: Elongation = { score: 0, splitX: 0, splitY: 0 };
   const widest = { split: -1, splitX: 0, splitY: 0 };
+  let offsetSpreadE = 1;
 
-  const paintAll = (
-    table: SpotTable,
-    members: Int32Array,
-    count: number,
-    model: Float32Array,
-    sign: number,
-  ) => {
+  const paintAll = (table: SpotTable, members: Int32Array, count: number, sign: number) => {
     for (let k = 0; k < count; k++) {
       const i = members[k];
-      painter.paint(model, table.x[i], table.y[i], sign * table.n[i]);
+      joint.paint(table.x[i], table.y[i], sign * table.n[i]);
     }
   };
 
-  const load = (pictures: FramePictures, count: number) => {
-    const { electrons, model, usable } = pictures;
-    window.load(electrons, model, usable, width, height, readVariance, centresX, centresY, count, reach);
-  };
-
   /** Matched-filter response to a spot by itself, in units of the background's noise. */
-  const responseTo = (xPx: number, yPx: number, brightnessE: number, { bare }: FramePictures) => {
+  const responseTo = (xPx: number, yPx: number, brightnessE: number) => {
     const x = Math.max(0, Math.min(width - 1, Math.round(xPx)));
     const y = Math.max(0, Math.min(height - 1, Math.round(yPx)));
     return (brightnessE * squares) / Math.sqrt(bare[y * width + x] + readVariance + DARK_VARIANCE_E2);
   };
 
   const start = (table: SpotTable, members: Int32Array, count: number) => {
-    joint.count = count;
     for (let k = 0; k < count; k++) {
       const i = members[k];
       joint.x[k] = table.x[i];
       joint.y[k] = table.y[i];
       joint.n[k] = table.n[i];
-      centresX[k] = table.x[i];
-      centresY[k] = table.y[i];
+      joint.centreX[k] = table.x[i];
+      joint.centreY[k] = table.y[i];
     }
   };
 
@@ -150,47 +120,37 @@ export function createGroupFitter(options: GroupFitterOptions, painter: SpotPain
   /** Scores of elongation after a fit, and the member that looks most like two. */
   const findWidest = (table: SpotTable, members: Int32Array, count: number) => {
     widest.split = -1;
+    joint.elongate();
     let most = ELONGATION_TRIED;
     for (let k = 0; k < count; k++) {
-      measureElongation(joint, window, k, elongation);
-      table.elongation[members[k]] = elongation.score;
-      if (elongation.score <= most) continue;
-      most = elongation.score;
+      const score = joint.elongation[k];
+      table.elongation[members[k]] = score;
+      if (!(score > most)) continue;
+      most = score;
       widest.split = k;
-      widest.splitX = elongation.splitX;
-      widest.splitY = elongation.splitY;
+      widest.splitX = joint.splitX[k];
+      widest.splitY = joint.splitY[k];
     }
   };
 
-  const fitPlain = (
-    table: SpotTable,
-    members: Int32Array,
-    count: number,
-    pictures: FramePictures,
-  ): number => {
-    paintAll(table, members, count, pictures.model, -1);
+  const fitPlain = (table: SpotTable, members: Int32Array, count: number): number => {
+    paintAll(table, members, count, -1);
     while (count > 0) {
       start(table, members, count);
-      load(pictures, count);
-      joint.run(window);
+      joint.load(count);
+      joint.run(count, offsetSpreadE);
       store(table, members, count);
       if (count === 1 || !dropOne(table, members, count)) break;
       count--;
     }
     findWidest(table, members, count);
-    paintAll(table, members, count, pictures.model, 1);
+    paintAll(table, members, count, 1);
     return count;
   };
 
   /** Tries one more spot near those fitted; true when the data ask for it. */
-  const tryOneMore = (
-    table: SpotTable,
-    members: Int32Array,
-    count: number,
-    pictures: FramePictures,
-    gainLeast: number,
-  ): boolean => {
-    const peak = look.strongest(window, pictures.model, pictures.bare, width);
+  const tryOneMore = (table: SpotTable, members: Int32Array, count: number, gainLeast: number): boolean => {
+    const peak = joint.look();
     const { response } = peak;
     const { split, splitX, splitY } = widest;
     if (split < 0 && response < RESPONSE_TRIED) return false;
@@ -199,23 +159,23 @@ export function createGroupFitter(options: GroupFitterOptions, painter: SpotPain
     const peakN = peak.brightness;
 
     // Both likelihoods must come from the same pixels, hence one window for both.
-    paintAll(table, members, count, pictures.model, -1);
+    paintAll(table, members, count, -1);
     start(table, members, count);
-    centresX[count] = split >= 0 && response < RESPONSE_TRIED ? table.x[members[split]] + splitX : peakX;
-    centresY[count] = split >= 0 && response < RESPONSE_TRIED ? table.y[members[split]] + splitY : peakY;
-    load(pictures, count + 1);
-    joint.run(window);
-    const before = joint.logLikelihood(window);
+    joint.centreX[count] = split >= 0 && response < RESPONSE_TRIED ? table.x[members[split]] + splitX : peakX;
+    joint.centreY[count] = split >= 0 && response < RESPONSE_TRIED ? table.y[members[split]] + splitY : peakY;
+    joint.load(count + 1);
+    joint.run(count, offsetSpreadE);
+    const before = joint.logLikelihood();
     let light = 0;
     for (let k = 0; k < count; k++) light += joint.n[k];
     const wanted = gainLeast + SHAPE_ERROR * SHAPE_ERROR * light;
     let best = before + 0.5 * wanted;
     let found = false;
     const attempt = () => {
-      joint.run(window);
-      const likelihood = joint.logLikelihood(window);
+      joint.run(count + 1, offsetSpreadE);
+      const likelihood = joint.logLikelihood();
       let good = likelihood > best;
-      for (let k = 0; k < joint.count; k++) {
+      for (let k = 0; k <= count; k++) {
         if (!(joint.n[k] > BRIGHTNESS_SIGMAS_LEAST * joint.sn[k])) good = false;
         for (let m = 0; m < k; m++) {
           const apart = Math.hypot(joint.x[k] - joint.x[m], joint.y[k] - joint.y[m]);
@@ -231,7 +191,6 @@ export function createGroupFitter(options: GroupFitterOptions, painter: SpotPain
     };
     if (response >= RESPONSE_TRIED) {
       start(table, members, count);
-      joint.count = count + 1;
       joint.x[count] = peakX;
       joint.y[count] = peakY;
       joint.n[count] = peakN;
@@ -239,7 +198,6 @@ export function createGroupFitter(options: GroupFitterOptions, painter: SpotPain
     }
     if (split >= 0) {
       start(table, members, count);
-      joint.count = count + 1;
       joint.x[count] = joint.x[split] + splitX;
       joint.y[count] = joint.y[split] + splitY;
       joint.x[split] -= splitX;
@@ -257,32 +215,32 @@ export function createGroupFitter(options: GroupFitterOptions, painter: SpotPain
       }
       // What was split off an elongated spot left no peak: its response is the one that its light would have.
       const shown =
-        response < RESPONSE_TRIED ? responseTo(bestX[count], bestY[count], bestN[count], pictures) : response;
+        response < RESPONSE_TRIED ? responseTo(bestX[count], bestY[count], bestN[count]) : response;
       const fresh = table.add(bestX[count], bestY[count], bestN[count], shown);
       table.group[fresh] = table.group[members[0]];
       members[count] = fresh;
     }
-    paintAll(table, members, found ? count + 1 : count, pictures.model, 1);
+    paintAll(table, members, found ? count + 1 : count, 1);
     return found;
   };
 
-  const fit: GroupFitter['fit'] = (table, members, count, pictures, lookTwice, aloneLeast, gainLeast) => {
-    let now = fitPlain(table, members, count, pictures);
-    if (now === 1 && aloneLeast > 0 && joint.significance(window) < aloneLeast) {
-      paintAll(table, members, now, pictures.model, -1);
+  const fit: GroupFitter['fit'] = (table, members, count, lookTwice, aloneLeast, gainLeast) => {
+    let now = fitPlain(table, members, count);
+    if (now === 1 && aloneLeast > 0 && joint.significance() < aloneLeast) {
+      paintAll(table, members, now, -1);
       table.alive[members[0]] = 0;
       return 0;
     }
     while (lookTwice && now > 0 && now < JOINT_SPOTS_MOST) {
-      if (!tryOneMore(table, members, now, pictures, gainLeast)) break;
+      if (!tryOneMore(table, members, now, gainLeast)) break;
       const before = now + 1;
-      now = fitPlain(table, members, before, pictures);
+      now = fitPlain(table, members, before);
       if (now < before) break;
     }
     return now;
   };
   const setOffsetSpread = (spreadE: number) => {
-    joint.offsetSpreadE = spreadE;
+    offsetSpreadE = spreadE;
   };
   return { fit, setOffsetSpread };
 }

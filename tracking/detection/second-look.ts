@@ -1,18 +1,11 @@
 import { createSpotKernel } from './spot-kernel';
 import type { FitWindow } from './fit-window';
+import type { ResidualPeak } from './spot-fits';
 
 /** Relative error of the assumed spot shape that the residual of a bright spot must not be taken for a spot. */
 export const SHAPE_ERROR = 0.08;
 /** Least variance of a pixel without light and read noise: a response to nothing but light is finite too. */
 export const DARK_VARIANCE_E2 = 1e-3;
-
-/** Where, in what is left after the fitted spots are taken away, another spot stands out the most. */
-export interface ResidualPeak {
-  response: number;
-  xPx: number;
-  yPx: number;
-  brightness: number;
-}
 
 /** Looks for spots in the residual of a window; keeps its arrays. */
 export interface SecondLook {

@@ -69,6 +69,27 @@ export interface SimdExports {
     clip: number,
     sums: number,
   ): void;
+  setUpJointFit(
+    fit: number,
+    electrons: number,
+    usable: number,
+    bare: number,
+    model: number,
+    imageWidth: number,
+    imageHeight: number,
+    reach: number,
+    windowMost: number,
+    tapReach: number,
+    sigma: number,
+    readVariance: number,
+  ): number;
+  paintSpot(fit: number, x: number, y: number, brightness: number): void;
+  loadJointFitWindow(fit: number, count: number): void;
+  runJointFit(fit: number, count: number, offsetSpread: number): number;
+  elongateJointFit(fit: number): void;
+  jointFitLikelihood(fit: number): number;
+  jointFitSignificance(fit: number): number;
+  peakOfResidual(fit: number, squares: number): void;
 }
 
 /** Makes an instance with a memory of its own. */

@@ -3,6 +3,13 @@
 
 export { correlateColumns, correlateRow } from './correlate';
 export { findPeaks } from './find-peaks';
+export { elongateJointFit } from './joint-fit-elongation';
+export { jointFitLikelihood, runJointFit } from './joint-fit';
+export { jointFitSignificance } from './joint-fit-significance';
+export { loadJointFitWindow } from './joint-fit-window';
+export { paintSpot } from './joint-fit-paint';
+export { peakOfResidual } from './joint-fit-residual';
+export { setUpJointFit } from './joint-fit-set-up';
 export { gatherLight, lightSums } from './light-sums';
 export { noiseRow } from './noise-row';
 export { toElectrons } from './to-electrons';

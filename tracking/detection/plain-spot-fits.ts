@@ -1,0 +1,68 @@
+import type { FramePlanes } from '../kernels/kernels';
+import { measureElongation, type Elongation } from './elongation';
+import { FitWindow } from './fit-window';
+import { JOINT_SPOTS_MOST } from './fit-work';
+import { JointFit } from './joint-fit';
+import { createSecondLook } from './second-look';
+import type { SpotFits } from './spot-fits';
+import { createSpotPainter } from './spot-painter';
+
+export interface SpotFitsOptions {
+  width: number;
+  height: number;
+  spotSigmaPx: number;
+  /** Square of the read noise, electrons^2. */
+  readVariance: number;
+  /** Boxes of pixels around spots reach so many pixels each way. */
+  reach: number;
+}
+
+/** Joint fits in plain TypeScript, double precision: the oracle of the compiled ones. */
+export function createPlainSpotFits(planes: FramePlanes, options: SpotFitsOptions): SpotFits {
+  const { width, height, spotSigmaPx, readVariance, reach } = options;
+  const { electrons, usable, bare, model } = planes;
+  const window = new FitWindow();
+  const joint = new JointFit(spotSigmaPx, reach, 1);
+  const painter = createSpotPainter(width, height, spotSigmaPx, reach);
+  const secondLook = createSecondLook(spotSigmaPx, readVariance);
+  const centreX = new Float64Array(JOINT_SPOTS_MOST);
+  const centreY = new Float64Array(JOINT_SPOTS_MOST);
+  const elongation = new Float64Array(JOINT_SPOTS_MOST);
+  const splitX = new Float64Array(JOINT_SPOTS_MOST);
+  const splitY = new Float64Array(JOINT_SPOTS_MOST);
+  const measured: Elongation = { score: 0, splitX: 0, splitY: 0 };
+  const { x, y, n, sx, sy, sn } = joint;
+  return {
+    x,
+    y,
+    n,
+    sx,
+    sy,
+    sn,
+    elongation,
+    splitX,
+    splitY,
+    centreX,
+    centreY,
+    paint: (xPx, yPx, brightness) => painter.paint(model, xPx, yPx, brightness),
+    load: (count) =>
+      window.load(electrons, model, usable, width, height, readVariance, centreX, centreY, count, reach),
+    run(count, offsetSpreadE) {
+      joint.count = count;
+      joint.offsetSpreadE = offsetSpreadE;
+      joint.run(window);
+      return joint.converged;
+    },
+    elongate() {
+      for (let k = 0; k < joint.count; k++) {
+        measureElongation(joint, window, k, measured);
+        elongation[k] = measured.score;
+        splitX[k] = measured.splitX;
+        splitY[k] = measured.splitY;
+      }
+    },
+    logLikelihood: () => joint.logLikelihood(window),
+    significance: () => joint.significance(window),
+    look: () => secondLook.strongest(window, model, bare, width),
+  };
+}
