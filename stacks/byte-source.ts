@@ -7,9 +7,27 @@ import { readFromFile, releaseFile } from './file-handles';
  */
 export interface ByteSource {
   readonly sizeBytes: number;
-  /** @throws OutOfRangeError when the range doesn't lie wholly inside the source. */
-  read(offset: number, length: number): Promise<Uint8Array>;
+  /**
+   * @param room memory that the bytes may be put into, grown where it is too small: large memory is costly
+   *   to ask for, and a frame is read into the same as the one before. What it held is gone.
+   * @throws OutOfRangeError when the range doesn't lie wholly inside the source.
+   */
+  read(offset: number, length: number, room?: ReadRoom): Promise<Uint8Array>;
   close(): Promise<void>;
+}
+
+/** Memory for reads that follow each other. */
+export interface ReadRoom {
+  bytes: Buffer;
+}
+
+/** So many bytes of `room`, or of their own without one. */
+function roomFor(length: number, room: ReadRoom | undefined): Buffer {
+  if (room && room.bytes.length >= length) return room.bytes.subarray(0, length);
+  // Not from Node's shared pool, so that 16-bit and 32-bit views are aligned.
+  const bytes = Buffer.allocUnsafeSlow(length);
+  if (room) room.bytes = bytes;
+  return bytes;
 }
 
 /** A read that reaches outside the source. */
@@ -37,15 +55,14 @@ export function lazyFileSource(path: string, sizeBytes: number): ByteSource {
   let checked = false;
   const source = {
     sizeBytes,
-    async read(offset: number, length: number) {
+    async read(offset: number, length: number, room?: ReadRoom) {
       assertInside(source, offset, length);
       if (!checked) {
         const { size } = await stat(path);
         if (size !== sizeBytes) throw new RangeError(`The file had ${sizeBytes} bytes, now it has ${size}.`);
         checked = true;
       }
-      // Not from Node's shared pool, so that 16-bit and 32-bit views are aligned.
-      const bytes = Buffer.allocUnsafeSlow(length);
+      const bytes = roomFor(length, room);
       const got = await readFromFile(path, bytes, offset);
       if (got < length) throw new OutOfRangeError(offset, length, offset + got);
       return bytes;
@@ -82,9 +99,9 @@ export function rangeSource(whole: ByteSource, start: number, sizeBytes: number)
   assertInside(whole, start, sizeBytes);
   const source = {
     sizeBytes,
-    async read(offset: number, length: number) {
+    async read(offset: number, length: number, room?: ReadRoom) {
       assertInside(source, offset, length);
-      return whole.read(start + offset, length);
+      return whole.read(start + offset, length, room);
     },
     async close() {},
   };

@@ -1,6 +1,6 @@
 import { type ByteSource, assertInside } from './byte-source';
 
-/** Page lists are scattered in small pieces: one read of this size often serves several of them. */
+/** Page lists and frame indexes are read in small pieces: one read of this size often serves several of them. */
 const WINDOW_BYTES = 16 * 1024;
 
 /** Small reads at any place of a source, served from the last stretch read where possible. */

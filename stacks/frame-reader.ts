@@ -1,4 +1,4 @@
-import { type ByteSource, memorySource } from './byte-source';
+import { type ByteSource, memorySource, type ReadRoom } from './byte-source';
 import { decodeFrame } from './decode-frame';
 import { type IndexReader } from './index-reader';
 import { maskNonFinite } from './mask-non-finite';
@@ -28,12 +28,17 @@ export function frameReader(sources: readonly ByteSource[], index: IndexReader):
     }
     return expanded.bytes;
   };
+  // Handed from frame to frame; one that is read at the same time as another gets its own.
+  let idle: ReadRoom | null = null;
   return {
     async read(frame, out) {
       const place = await index.locate(frame);
       const bytes = place.entry ? await entryBytes(place.source, place.entry) : sources[place.source]!;
-      const parts = await readSegments(bytes, place.segments);
+      const room = idle ?? { bytes: Buffer.alloc(0) };
+      idle = null;
+      const parts = await readSegments(bytes, place.segments, room);
       decodeFrame(parts, layouts[place.layout]!, width, height, out);
+      idle = room;
       return index.sampleKind === 'float' ? maskNonFinite(out, width, height) : 0;
     },
   };

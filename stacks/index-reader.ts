@@ -1,4 +1,5 @@
 import { type ByteSource } from './byte-source';
+import { ByteWindow } from './byte-window';
 import { type FrameLayout } from './frame-layout';
 import { type Segments } from './segments';
 import {
@@ -17,7 +18,7 @@ export interface IndexReader extends StackShape {
   frames: number;
   layouts: FrameLayout[];
   sources: IndexedSource[];
-  /** Two short reads, wherever the frame stands. */
+  /** Two short reads at most, wherever the frame stands; none for most frames that follow each other. */
   locate(frame: number): Promise<FrameRecord & { segments: Segments }>;
 }
 
@@ -55,17 +56,16 @@ export async function openIndex(source: ByteSource): Promise<IndexReader> {
   }
   const text = Buffer.from(await source.read(INDEX_HEAD_BYTES, descriptionBytes)).toString('utf8');
   const shape = JSON.parse(text) as Omit<IndexReader, 'frames' | 'locate'> & { maxCount: number | null };
+  const records = new ByteWindow(source);
+  const segments = new ByteWindow(source);
   return {
     ...shape,
     maxCount: shape.maxCount ?? Infinity,
     frames,
     async locate(frame) {
-      const record = readRecord(viewOf(await source.read(recordsAt + frame * RECORD_BYTES, RECORD_BYTES)), 0);
-      const table = await source.read(
-        segmentsAt + record.firstSegment * SEGMENT_BYTES,
-        record.segmentCount * SEGMENT_BYTES,
-      );
-      const view = viewOf(table);
+      const record = readRecord(await records.view(recordsAt + frame * RECORD_BYTES, RECORD_BYTES), 0);
+      const from = segmentsAt + record.firstSegment * SEGMENT_BYTES;
+      const view = await segments.view(from, record.segmentCount * SEGMENT_BYTES);
       const pick = (part: 0 | 8) =>
         Float64Array.from({ length: record.segmentCount }, (_, i) =>
           view.getFloat64(i * SEGMENT_BYTES + part, true),

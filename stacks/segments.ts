@@ -1,4 +1,4 @@
-import { type ByteSource } from './byte-source';
+import { type ByteSource, type ReadRoom } from './byte-source';
 
 /** Strips or tiles of a frame: segment `i` is `lengths[i]` bytes at `offsets[i]`. */
 export interface Segments {
@@ -9,12 +9,17 @@ export interface Segments {
 /** Segments within a stretch of at most this factor of their bytes are read in one go. */
 const SPAN_FACTOR = 1.5;
 
-/** The bytes of each segment. @throws OutOfRangeError when one lies outside the source. */
+/**
+ * The bytes of each segment.
+ * @param room the bytes may lie in it, until the next read into it
+ * @throws OutOfRangeError when one lies outside the source.
+ */
 export async function readSegments(
   source: ByteSource,
   { offsets, lengths }: Segments,
+  room?: ReadRoom,
 ): Promise<Uint8Array[]> {
-  if (offsets.length === 1) return [await source.read(offsets[0]!, lengths[0]!)];
+  if (offsets.length === 1) return [await source.read(offsets[0]!, lengths[0]!, room)];
   let [from, to, sum] = [Infinity, 0, 0];
   for (let i = 0; i < offsets.length; i++) {
     from = Math.min(from, offsets[i]!);
@@ -22,7 +27,7 @@ export async function readSegments(
     sum += lengths[i]!;
   }
   if (to - from <= SPAN_FACTOR * sum) {
-    const span = await source.read(from, to - from);
+    const span = await source.read(from, to - from, room);
     return Array.from(offsets, (offset, i) => span.subarray(offset - from, offset - from + lengths[i]!));
   }
   const parts: Uint8Array[] = [];

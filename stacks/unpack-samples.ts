@@ -1,16 +1,7 @@
 import { type FrameLayout, rowBytes } from './frame-layout';
+import { wholeByteSamples } from './whole-byte-samples';
 
 type Layout = Pick<FrameLayout, 'bits' | 'sampleKind' | 'littleEndian' | 'samplesPerPixel'>;
-
-function wholeBytes(layout: Layout, bytes: Uint8Array, out: Float32Array, count: number): void {
-  const { bits, sampleKind, littleEndian } = layout;
-  const view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);
-  if (bits === 8 && sampleKind === 'uint') for (let i = 0; i < count; i++) out[i] = bytes[i]!;
-  else if (bits === 8) for (let i = 0; i < count; i++) out[i] = view.getInt8(i);
-  else if (bits === 32) for (let i = 0; i < count; i++) out[i] = view.getFloat32(i * 4, littleEndian);
-  else if (sampleKind === 'int') for (let i = 0; i < count; i++) out[i] = view.getInt16(i * 2, littleEndian);
-  else for (let i = 0; i < count; i++) out[i] = view.getUint16(i * 2, littleEndian);
-}
 
 /** Samples of 9 to 15 bits: most significant bit first whatever the byte order, as TIFF 6.0 packs them. */
 function packedRow(
@@ -48,7 +39,7 @@ export function unpackSamples(
 ): void {
   const perRow = columns * layout.samplesPerPixel;
   if (layout.bits % 8 === 0) {
-    wholeBytes(layout, bytes, out, rows * perRow);
+    wholeByteSamples(layout, bytes, out.subarray(0, rows * perRow));
     return;
   }
   const size = rowBytes(columns, layout);
