@@ -34,7 +34,7 @@ export async function modelOf(
     frames.push(await stack.readFrame(frame));
     onProgress((0.5 * frames.length) / picked.length);
   }
-  const model = measure(frames, request);
+  const model = measure(frames, request, picked);
   return { model, recipe: resolveRecipe(request, { ...model, frames: stack.frames, pixelSizeM }) };
 }
 
