@@ -35,7 +35,8 @@ export function jointFitRoom(reach: number, tapReach: number, apartPx: number): 
   const windowMost = 4 * Math.ceil((side + (JOINT_SPOTS_MOST + 1) * apartPx) / 4);
   const shareRoom = 4 * Math.ceil(side / 4) + 4;
   const guards = 2 * (side + 16);
-  const noise = windowMost * (windowMost + 2 * tapReach + 8);
+  // The residual in rows with margins, and the same correlated along its rows with margins above and below.
+  const noise = windowMost * (2 * windowMost + 4 * tapReach + 8);
   const floats =
     6 * shareRoom * (JOINT_SPOTS_MOST + 1) +
     (tapReach + 8) +

@@ -17,20 +17,21 @@ export function peakOfResidual(fit: usize, squares: f64): void {
   paintExpected(fit, s.count, 0);
   writeNoise(s);
   correlateRows(s);
+  const last = s.taps + ((<usize>s.tapReach) << 2);
   let best: f32 = -Infinity;
   let bestX: i32 = 0;
   let bestY: i32 = 0;
   const rowBytes = (<usize>s.stride) << 2;
-  const zero = f32x4.splat(0);
   for (let y: i32 = 1; y < s.height - 1; y++) {
     for (let x: i32 = 0; x < s.width; x += 4) {
       const at = <usize>y * rowBytes + ((<usize>x) << 2);
-      let sum = f32x4.mul(v128.load32_splat(s.taps), v128.load(s.score + at));
-      for (let k: i32 = 1; k <= s.tapReach; k++) {
-        const far = <usize>k * rowBytes;
-        const up = y >= k ? v128.load(s.score + at - far) : zero;
-        const down = y + k < s.height ? v128.load(s.score + at + far) : zero;
-        sum = f32x4.add(sum, f32x4.mul(v128.load32_splat(s.taps + ((<usize>k) << 2)), f32x4.add(up, down)));
+      const middle = rowsOf(s) + at;
+      let sum = f32x4.mul(v128.load32_splat(s.taps), v128.load(middle));
+      let far: usize = 0;
+      for (let tap = s.taps + 4; tap <= last; tap += 4) {
+        far += rowBytes;
+        const both = f32x4.add(v128.load(middle - far), v128.load(middle + far));
+        sum = f32x4.add(sum, f32x4.mul(v128.load32_splat(tap), both));
       }
       const stronger = v128.and(f32x4.gt(sum, f32x4.splat(best)), v128.load(s.used + at));
       if (!v128.any_true(stronger)) continue;
@@ -82,26 +83,41 @@ function writeNoise(s: Settings): void {
   }
 }
 
+/** Numbers from row to row of `noise`. */
 function noiseStride(s: Settings): i32 {
   return (s.stride + 2 * s.tapReach + 3) & ~3;
 }
 
-/** Correlates `noise` along x into `score`. */
+/** First of the rows correlated along x, `stride` numbers each, with rows of zeros above and below. */
+function rowsOf(s: Settings): usize {
+  return s.noise + ((<usize>(s.height * noiseStride(s) + s.tapReach * s.stride)) << 2);
+}
+
+/** Correlates `noise` along x. */
 function correlateRows(s: Settings): void {
-  const reach = s.tapReach;
   const length = noiseStride(s);
+  const last = s.taps + ((<usize>s.tapReach) << 2);
+  const marginBytes = (<usize>(s.tapReach * s.stride)) << 2;
+  const end = (<usize>(s.height * s.stride)) << 2;
+  const rows = rowsOf(s);
+  for (let at: usize = 0; at < marginBytes; at += 16) {
+    v128.store(rows + at - marginBytes, f32x4.splat(0));
+    v128.store(rows + at + end, f32x4.splat(0));
+  }
+  let out = rows;
   for (let y: i32 = 0; y < s.height; y++) {
-    const row = s.noise + ((<usize>(y * length + reach)) << 2);
-    const out = s.score + ((<usize>(y * s.stride)) << 2);
-    for (let x: i32 = 0; x < s.stride; x += 4) {
-      const at = row + ((<usize>x) << 2);
+    const row = s.noise + ((<usize>(y * length + s.tapReach)) << 2);
+    const rowEnd = row + ((<usize>s.stride) << 2);
+    for (let at = row; at < rowEnd; at += 16) {
       let sum = f32x4.mul(v128.load32_splat(s.taps), v128.load(at));
-      for (let k: i32 = 1; k <= reach; k++) {
-        const far = (<usize>k) << 2;
+      let far: usize = 0;
+      for (let tap = s.taps + 4; tap <= last; tap += 4) {
+        far += 4;
         const both = f32x4.add(v128.load(at - far), v128.load(at + far));
-        sum = f32x4.add(sum, f32x4.mul(v128.load32_splat(s.taps + far), both));
+        sum = f32x4.add(sum, f32x4.mul(v128.load32_splat(tap), both));
       }
-      v128.store(out + ((<usize>x) << 2), sum);
+      v128.store(out, sum);
+      out += 16;
     }
   }
 }

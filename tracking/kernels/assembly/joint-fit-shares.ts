@@ -3,15 +3,15 @@ const LOG2_E: f32 = 1.44269504;
 const ROUNDING: f32 = 12582912;
 const LN_2_HIGH: f32 = 0.693359375;
 const LN_2_LOW: f32 = -2.1219444e-4;
-/** Beyond this the exponential is below 1e-30 and its exponent would leave the range. */
+/** Below this the exponential is under 1e-34 and its exponent would leave the range. */
 const LEAST: f32 = -80;
 
 /**
- * exp of four numbers <= 0, relative error below 3e-7: x = n ln 2 + r, exp r by the polynomial of the
+ * exp(-t^2 / 2) of four numbers, relative error below 1e-6: x = n ln 2 + r, exp r by the polynomial of the
  * Cephes library's expf (Moshier 1989).
  */
-export function expOf(x: v128): v128 {
-  const inRange = f32x4.max(x, f32x4.splat(LEAST));
+function gaussOf(t: v128): v128 {
+  const inRange = f32x4.pmax(f32x4.splat(LEAST), f32x4.mul(f32x4.mul(t, t), f32x4.splat(-0.5)));
   const rounded = f32x4.add(f32x4.mul(inRange, f32x4.splat(LOG2_E)), f32x4.splat(ROUNDING));
   const n = f32x4.sub(rounded, f32x4.splat(ROUNDING));
   const r = f32x4.sub(
@@ -70,27 +70,32 @@ export function shareLight(
   const slopes = f32x4.splat(density * inverse);
   const step = f32x4.splat(4 * inverse);
   let t = f32x4.mul(f32x4.sub(f32x4(-0.5, 0.5, 1.5, 2.5), f32x4.splat(centre)), f32x4.splat(inverse));
-  let place = i32x4(-4, -3, -2, -1);
-  let gauss = t;
-  let phi = t;
-  let slope = t;
+  let gauss = gaussOf(t);
+  let phi = halfCumulative(t, gauss);
+  let slope = f32x4.mul(t, gauss);
+  let place = i32x4(0, 1, 2, 3);
+  const behind = i32x4.splat(to);
+  const before = i32x4.splat(from);
   // Edges 4 at a time; the pixels of a vector need the first edge of the next one. The number of edges,
   // pixels + 1, is even: the last pixel's second edge is in its own vector.
   const bytes = ((<usize>(pixels + 4)) >> 2) << 4;
-  for (let at: usize = 0; at <= bytes; at += 16) {
-    const gauss2 = expOf(f32x4.mul(f32x4.mul(t, t), f32x4.splat(-0.5)));
-    const phi2 = halfCumulative(t, gauss2);
-    const slope2 = f32x4.mul(t, gauss2);
-    if (at > 0) {
-      const inside = v128.andnot(i32x4.gt_s(i32x4.splat(to), place), i32x4.gt_s(i32x4.splat(from), place));
-      const phiNext = v128.shuffle<f32>(phi, phi2, 1, 2, 3, 4);
-      const gaussNext = v128.shuffle<f32>(gauss, gauss2, 1, 2, 3, 4);
-      const slopeNext = v128.shuffle<f32>(slope, slope2, 1, 2, 3, 4);
-      v128.store(share + at - 16, v128.and(f32x4.sub(phiNext, phi), inside));
-      v128.store(first + at - 16, v128.and(f32x4.mul(f32x4.sub(gauss, gaussNext), densities), inside));
-      v128.store(second + at - 16, v128.and(f32x4.mul(f32x4.sub(slope, slopeNext), slopes), inside));
-    }
+  for (let at: usize = 0; at < bytes; at += 16) {
     t = f32x4.add(t, step);
+    let gauss2 = gauss;
+    let phi2 = phi;
+    let slope2 = slope;
+    if (at + 16 < bytes) {
+      gauss2 = gaussOf(t);
+      phi2 = halfCumulative(t, gauss2);
+      slope2 = f32x4.mul(t, gauss2);
+    }
+    const inside = v128.andnot(i32x4.gt_s(behind, place), i32x4.gt_s(before, place));
+    const phiNext = v128.shuffle<f32>(phi, phi2, 1, 2, 3, 4);
+    const gaussNext = v128.shuffle<f32>(gauss, gauss2, 1, 2, 3, 4);
+    const slopeNext = v128.shuffle<f32>(slope, slope2, 1, 2, 3, 4);
+    v128.store(share + at, v128.and(f32x4.sub(phiNext, phi), inside));
+    v128.store(first + at, v128.and(f32x4.mul(f32x4.sub(gauss, gaussNext), densities), inside));
+    v128.store(second + at, v128.and(f32x4.mul(f32x4.sub(slope, slopeNext), slopes), inside));
     gauss = gauss2;
     phi = phi2;
     slope = slope2;
