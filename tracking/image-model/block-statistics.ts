@@ -8,13 +8,13 @@ import type { QuietPixels } from './quiet-pixels';
 export interface BlockStatistics {
   grid: BlockGrid;
   pairs: number;
-  /** Quiet pixels; in pairs of two frames each is seen twice. */
+  /** Quiet pixels of a frame. */
   pixels: Float64Array;
   /** Mean; NaN where no pixel is quiet. */
   level: Float64Array;
   /** Sum of squares of the differences of the two frames about their mean, halved: variance * (pixels - 1). */
   noiseSum: Float64Array;
-  /** Sum of third powers about the mean, of the pair's frames together, and their number. */
+  /** Sum of third powers about each frame's own mean, both frames together, and their number. */
   thirdSum: Float64Array;
   thirdCount: Float64Array;
 }
@@ -33,46 +33,51 @@ export function blockStatistics({ grid, bins, pairs, quiet, level }: QuietPixels
     thirdCount: table(),
   };
   const levels = blockMeans(level, grid);
-  const sums: PairSums = {
-    pixels: new Float64Array(blocks),
-    sum: new Float64Array(blocks),
-    difference: new Float64Array(blocks),
-    differences2: new Float64Array(blocks),
-    squares: new Float64Array(blocks),
-    cubes: new Float64Array(blocks),
-  };
+  const sums = createPairSums(blocks);
   pairs.forEach(({ first, second, alone }, p) => {
     for (const values of Object.values(sums)) values.fill(0);
     addPair(first.counts, second.counts, level, quiet[p], bins.columns, grid, sums);
-    // A frame that stands alone was counted twice.
-    const share = alone ? 0.5 : 1;
     for (let b = 0; b < blocks; b++) {
       const n = sums.pixels[b];
       if (n === 0) continue;
       const at = p * blocks + b;
-      const values = 2 * share * n;
-      const mean = (share * sums.sum[b]) / values;
+      const meanA = sums.sumA[b] / n;
+      const meanB = sums.sumB[b] / n;
       out.pixels[at] = n;
-      out.level[at] = levels[b] + mean;
-      out.noiseSum[at] = 0.5 * (sums.differences2[b] - sums.difference[b] ** 2 / n);
-      if (values < 3) continue;
-      const third = share * (sums.cubes[b] - 3 * mean * sums.squares[b]) + 2 * values * mean ** 3;
-      // The sample's third moment about its own mean is too small by this factor.
-      out.thirdSum[at] = (third * values * values) / ((values - 1) * (values - 2));
-      out.thirdCount[at] = values;
+      out.level[at] = levels[b] + 0.5 * (meanA + meanB);
+      out.noiseSum[at] = 0.5 * (sums.differences2[b] - n * (meanA - meanB) ** 2);
+      if (n < 3) continue;
+      out.thirdSum[at] = thirdAboutMean(n, meanA, sums.squaresA[b], sums.cubesA[b]);
+      out.thirdCount[at] = n;
+      if (alone) continue;
+      out.thirdSum[at] += thirdAboutMean(n, meanB, sums.squaresB[b], sums.cubesB[b]);
+      out.thirdCount[at] += n;
     }
   });
   return out;
 }
 
-/** Of both frames of a pair, by block: what pixels are above the level, their differences, powers of both. */
-interface PairSums {
-  pixels: Float64Array;
-  sum: Float64Array;
-  difference: Float64Array;
-  differences2: Float64Array;
-  squares: Float64Array;
-  cubes: Float64Array;
+/** Sum of third powers about the mean, raised by what the sample's own mean takes from it. */
+function thirdAboutMean(n: number, mean: number, squares: number, cubes: number): number {
+  const third = cubes - 3 * mean * squares + 2 * n * mean ** 3;
+  return (third * n * n) / ((n - 1) * (n - 2));
+}
+
+/** By block: quiet pixels, sums of the powers of what they are above the level, of both frames, and of the differences. */
+type PairSums = ReturnType<typeof createPairSums>;
+
+function createPairSums(blocks: number) {
+  const table = () => new Float64Array(blocks);
+  return {
+    pixels: table(),
+    sumA: table(),
+    sumB: table(),
+    squaresA: table(),
+    squaresB: table(),
+    cubesA: table(),
+    cubesB: table(),
+    differences2: table(),
+  };
 }
 
 function addPair(
@@ -90,33 +95,37 @@ function addPair(
       const bin = (y >> 1) * binColumns;
       for (let c = 0; c < columns; c++) {
         let n = 0;
-        let sum = 0;
-        let difference = 0;
+        let sumA = 0;
+        let sumB = 0;
+        let squaresA = 0;
+        let squaresB = 0;
+        let cubesA = 0;
+        let cubesB = 0;
         let differences2 = 0;
-        let squares = 0;
-        let cubes = 0;
         const end = blockStart(c + 1, columns, width);
         for (let x = blockStart(c, columns, width); x < end; x++) {
           if (quiet[bin + (x >> 1)] === 0) continue;
           const at = y * width + x;
           const a = first[at] - level[at];
           const b = second[at] - level[at];
-          const aa = a * a;
-          const bb = b * b;
           n++;
-          sum += a + b;
-          difference += a - b;
+          sumA += a;
+          sumB += b;
+          squaresA += a * a;
+          squaresB += b * b;
+          cubesA += a * a * a;
+          cubesB += b * b * b;
           differences2 += (a - b) * (a - b);
-          squares += aa + bb;
-          cubes += a * aa + b * bb;
         }
         const to = r * columns + c;
         sums.pixels[to] += n;
-        sums.sum[to] += sum;
-        sums.difference[to] += difference;
+        sums.sumA[to] += sumA;
+        sums.sumB[to] += sumB;
+        sums.squaresA[to] += squaresA;
+        sums.squaresB[to] += squaresB;
+        sums.cubesA[to] += cubesA;
+        sums.cubesB[to] += cubesB;
         sums.differences2[to] += differences2;
-        sums.squares[to] += squares;
-        sums.cubes[to] += cubes;
       }
     }
   }

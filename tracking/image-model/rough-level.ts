@@ -98,13 +98,13 @@ function steadyTables(tables: readonly Float64Array[], { columns, rows }: BlockG
   }
 }
 
-/** Along straight lines between the middles of the stretches. */
+/** Along straight lines through the middles of the stretches, carried on to the first and the last pair. */
 function levelAt(tables: readonly Float64Array[], pair: number, pairs: number): Float64Array {
-  const at = Math.min(tables.length - 1, Math.max(0, ((pair + 0.5) * tables.length) / pairs - 0.5));
-  const before = tables[Math.floor(at)];
-  const after = tables[Math.ceil(at)];
-  const share = at - Math.floor(at);
-  return before.map((level, b) => level + share * (after[b] - level));
+  if (tables.length === 1) return tables[0];
+  const at = ((pair + 0.5) * tables.length) / pairs - 0.5;
+  const k = Math.min(tables.length - 2, Math.max(0, Math.floor(at)));
+  const after = tables[k + 1];
+  return tables[k].map((level, b) => level + (at - k) * (after[b] - level));
 }
 
 /** Values spread evenly over a block and all frames; those without a number are left out. */
