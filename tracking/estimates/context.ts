@@ -1,6 +1,7 @@
 import type { Conditions, Recipe, Tracks } from '../types';
 import type { Fellows } from './fellows';
 import type { LineGroups } from './line-groups';
+import type { NearestLines } from './nearest-lines';
 import type { TrappedPool } from './trapped-pool';
 
 /** What the methods that look at trapped tracers share. */
@@ -12,6 +13,7 @@ export interface EstimateContext {
   pool: TrappedPool;
   groups: LineGroups;
   fellows: Fellows | null;
+  nearest: NearestLines;
   /** Points per frame of the tracks of a line, by line. */
   tracersByLine: Float64Array;
 }

@@ -1,6 +1,7 @@
 import type { Conditions, Recipe, Tracks } from '../types';
 import { beadsPerLength } from './beads-per-length';
 import { combine } from './combine';
+import { crossingsEstimate } from './crossings';
 import { withoutTracers, type EstimateContext } from './context';
 import type { Estimate, EstimateMethod } from './estimate';
 import { findFellows } from './fellows';
@@ -8,10 +9,14 @@ import { heatFluxPrior } from './heat-flux-prior';
 import { asEstimates, notUsable, type DensityResult } from './interval';
 import { lineGroups } from './line-groups';
 import { lineVelocityEstimate } from './line-velocity';
+import { nearestLines } from './nearest-lines';
 import { neighbourDistanceEstimate } from './neighbour-distance';
 import { trappedPool } from './trapped-pool';
+import { visibleLengthEstimate } from './visible-length';
 
 const BY_TRACERS: readonly [EstimateMethod, (context: EstimateContext) => DensityResult][] = [
+  ['crossings', crossingsEstimate],
+  ['visible-length', visibleLengthEstimate],
   ['neighbour-distance', neighbourDistanceEstimate],
   ['beads-per-length', beadsPerLength],
   ['line-velocity', lineVelocityEstimate],
@@ -56,7 +61,8 @@ export function lineDensityEstimates(
         tracersByLine[groups.line[i]] += (tracks.start[i + 1] - tracks.start[i]) / image.frames;
     }
     const fellows = h ? findFellows(pool, groups, image, conditions, h, recipe.spotSizePx) : null;
-    const context = { tracks, image, conditions, recipe, pool, groups, fellows, tracersByLine };
+    const nearest = nearestLines(tracks, pool, groups, image, conditions.pixelSize_m);
+    const context = { tracks, image, conditions, recipe, pool, groups, fellows, nearest, tracersByLine };
     return BY_TRACERS.map(([, estimate]) => estimate(context));
   }
 }

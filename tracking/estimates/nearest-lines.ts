@@ -18,8 +18,12 @@ export interface NearestLines {
   ended: Float64Array;
   /** Sum of pi min(distance, distance to the edge)^2, m^2. */
   areaM2: Float64Array;
-  /** Lines per frame. */
+  /** Share of the frames looked at in which a line is seen. */
+  present: Float64Array;
+  /** Lines per frame: the sum of the shares. */
   linesPerFrame: number;
+  /** 1 for tracks that are long enough to be joined to their lines. */
+  used: Uint8Array;
   /** Share of the trapped points that belong to tracks long enough to be used. */
   usedShare: number;
 }
@@ -51,23 +55,26 @@ export function nearestLines(
     used[i] = 1;
     usedPoints += length;
   }
-  let lines = 0;
+  const present = new Float64Array(groups.lines);
   let frames = 0;
   for (let frame = Math.floor(step / 2); frame < image.frames; frame += step) {
     const { line, x, y } = representatives(tracks, used, groups, frame);
     frames++;
-    lines += line.length;
     const nearest = nearestDistances(x, y, image);
     for (let i = 0; i < line.length; i++) {
+      present[line[i]]++;
       const edge = Math.min(x[i], y[i], image.width - 1 - x[i], image.height - 1 - y[i]) + 0.5;
       if (nearest[i] <= edge) ended[line[i]]++;
       areaM2[line[i]] += Math.PI * (Math.max(0, Math.min(nearest[i], edge)) * pixelSizeM) ** 2;
     }
   }
+  for (let i = 0; i < groups.lines; i++) present[i] /= Math.max(1, frames);
   return {
     ended,
     areaM2,
-    linesPerFrame: frames > 0 ? lines / frames : 0,
+    present,
+    used,
+    linesPerFrame: present.reduce((a, b) => a + b, 0),
     usedShare: points > 0 ? usedPoints / points : 0,
   };
 }

@@ -1,7 +1,6 @@
 import { createRandom, mixSeed } from '../random';
 import { ANISOTROPY_ERROR, THICKNESS_ERROR, type EstimateContext } from './context';
 import { lnSpread, notUsable, type DensityResult } from './interval';
-import { nearestLines } from './nearest-lines';
 import { resampleLines } from './resample-lines';
 import { decoratedShare } from './sheet-geometry';
 import { lineDensityFromNeighbourDistance, neighbourDistance } from './stereology';
@@ -18,7 +17,7 @@ const THICK_ERROR = 0.15;
  */
 export function neighbourDistanceEstimate(context: EstimateContext): DensityResult {
   const method = 'neighbour-distance';
-  const { tracks, pool, groups, fellows, image, conditions, recipe } = context;
+  const { groups, fellows, nearest, conditions, recipe } = context;
   const h = conditions.sheetThickness_m;
   if (!groups.told) {
     return notUsable(
@@ -26,7 +25,6 @@ export function neighbourDistanceEstimate(context: EstimateContext): DensityResu
       'The trapped tracks are too short or too still to tell which of them share a line.',
     );
   }
-  const nearest = nearestLines(tracks, pool, groups, image, conditions.pixelSize_m);
   const total = (of: Float64Array) => of.reduce((a, b) => a + b, 0);
   const perAreaM2 = total(nearest.ended) / total(nearest.areaM2);
   if (!(perAreaM2 > 0))

@@ -1,4 +1,5 @@
 import { describe, expect, test, vi } from 'vitest';
+import { shortestTree } from '@/tracking/estimates/chain-lengths';
 import type { Estimate } from '@/tracking/estimates/estimate';
 import { lineDensityEstimates } from '@/tracking/estimates/line-density-estimates';
 import { nearestDistances } from '@/tracking/estimates/nearest-lines';
@@ -58,7 +59,15 @@ function estimated(options: Partial<Parameters<typeof tangleScene>[0]>, conditio
   return { scene, tracks, tracer, estimates, line, density };
 }
 
-const METHODS = ['neighbour-distance', 'beads-per-length', 'line-velocity', 'heat-flux-prior', 'combined'];
+const METHODS = [
+  'crossings',
+  'visible-length',
+  'neighbour-distance',
+  'beads-per-length',
+  'line-velocity',
+  'heat-flux-prior',
+  'combined',
+];
 
 describe('on beads of lines of known density', () => {
   test.each([
@@ -123,7 +132,52 @@ describe('on beads of lines of known density', () => {
   });
 });
 
+describe('in a sheet thin against the spacing', () => {
+  test.each([1, 2, 3])(
+    'crossings hold the truth, the length between tracers stays below it (seed %i)',
+    (seed) => {
+      const thin = { ...CONDITIONS, sheetThickness_m: 8e-5 };
+      const { density } = estimated({ seed, sheetThicknessM: 8e-5, beadsPerMetre: 20000 }, thin);
+      const { value, low, high, inputs } = density('crossings');
+      expect(value).not.toBeNull();
+      expect(low).toBeLessThanOrEqual(1e7);
+      expect(high).toBeGreaterThanOrEqual(1e7);
+      // Isotropic lines cross L / 2 times per area (Saltykov 1945); the lines that carry a tracer are seen.
+      const perAreaM2 = inputs.linesPerArea.value as number;
+      expectWithin(value ?? 0, (2 * perAreaM2) / (inputs.decoratedShare.value as number), { rel: 1e-9 });
+      const visible = density('visible-length');
+      expect(visible.value).toBeNull();
+      expect(visible.low).toBeGreaterThan(0.05e7);
+      expect(visible.low).toBeLessThan(1e7);
+      expect(visible.note).toMatch(/lower limit/);
+    },
+  );
+});
+
+test('the shortest tree through points on a line in any order is the way from end to end', () => {
+  const random = createRandom(9);
+  const along = Array.from({ length: 12 }, () => random.uniform());
+  const points = along.map((t) => ({ x: 30 * t, y: 40 * t }));
+  expectWithin(shortestTree(points), 50 * (Math.max(...along) - Math.min(...along)), { rel: 1e-12 });
+  // Corners of a unit square: three sides.
+  expect(
+    shortestTree([
+      { x: 0, y: 0 },
+      { x: 1, y: 1 },
+      { x: 1, y: 0 },
+      { x: 0, y: 1 },
+    ]),
+  ).toBe(3);
+  expect(shortestTree([])).toBe(0);
+});
+
 describe('a method that can’t be used has no value and says why', () => {
+  test('a sheet that is no plane against the spacing rules crossings out', () => {
+    const { density } = estimated({});
+    expect(density('crossings').value).toBeNull();
+    expect(density('crossings').note).toMatch(/times as thick as the lines are apart/);
+  });
+
   test('without a thickness tracers give no density, the velocity still does', () => {
     const { density } = estimated({}, { ...CONDITIONS, sheetThickness_m: null });
     expect(density('beads-per-length')).toMatchObject({ value: null, low: null, high: null });
