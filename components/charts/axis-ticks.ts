@@ -40,14 +40,22 @@ function linearTicks(min: number, max: number, parts: number): AxisTicks {
   return { major, minor };
 }
 
+/** Below so many decades their powers alone leave an axis bare, and 2 and 5 are named too. */
+const BARE_DECADES = 2;
+
+/** True where ticks of a log axis are powers of ten alone, and are written so. */
+export const showsPowers = ({ min, max, log }: AxisRange): boolean =>
+  !!log && Math.log10(max / min) >= BARE_DECADES;
+
 function logTicks(min: number, max: number): AxisTicks {
+  const named = showsPowers({ min, max, log: true }) ? [1] : [1, 2, 5];
   const major: number[] = [];
   const minor: number[] = [];
   for (let decade = Math.floor(Math.log10(min)); decade <= Math.log10(max) + 1e-9; decade += 1) {
     for (let m = 1; m < 10; m += 1) {
       const value = tidy(m * 10 ** decade);
       if (value < min * 0.999999 || value > max * 1.000001) continue;
-      (m === 1 ? major : minor).push(value);
+      (named.includes(m) ? major : minor).push(value);
     }
   }
   return { major, minor };

@@ -25,13 +25,15 @@ interface CurvePlotProps {
   fileName: string;
 }
 
-/** Where along a curve its name points, so that names of several curves stay apart. */
-const NAMED_AT: Record<PlottedPopulation, number> = { trapped: 0.78, free: 0.5, all: 0.5, undecided: 0.25 };
+/** Names of curves from the uppermost down: where along the curve they point, and where they stand from there. */
+const UPPERMOST = { at: 0.35, dxPx: -16, dyPx: -22 };
+const LOWER = { at: 0.6, dxPx: 18, dyPx: 32 };
 const HEIGHT_PX = 300;
 
 /** A quantity against the lag for each population, drawn in the population's stroke. */
 export function CurvePlot({ curves, x, y, level, label, fileName }: CurvePlotProps) {
   const drawn = DRAWING_ORDER.flatMap((name) => curves.filter(({ population }) => population === name));
+  const highest = drawn.reduce((top, curve) => (heightOf(curve) > heightOf(top) ? curve : top), drawn[0]);
   return (
     <ChartFrame label={label} fileName={fileName} table={curveTable(drawn, x.title, y.title)}>
       <Plot heightPx={HEIGHT_PX} x={x} y={y}>
@@ -66,16 +68,17 @@ export function CurvePlot({ curves, x, y, level, label, fileName }: CurvePlotPro
             </g>
           );
         })}
-        {drawn.map((curve, place) => {
+        {drawn.map((curve) => {
+          const { at, dxPx, dyPx } = curve === highest ? UPPERMOST : LOWER;
           const shown = curve.points.filter((point) => point.y !== null);
-          const at = shown[Math.floor(NAMED_AT[curve.population] * (shown.length - 1))];
-          return at ? (
+          const point = shown[Math.floor(at * (shown.length - 1))];
+          return point ? (
             <LabelMark
               key={curve.population}
-              x={at.x}
-              y={at.y ?? 0}
-              dxPx={place % 2 === 0 ? 18 : -18}
-              dyPx={place % 2 === 0 ? 30 : -26}
+              x={point.x}
+              y={point.y ?? 0}
+              dxPx={dxPx}
+              dyPx={dyPx}
               words={curve.population}
               note={curve.finding}
             />
@@ -85,6 +88,9 @@ export function CurvePlot({ curves, x, y, level, label, fileName }: CurvePlotPro
     </ChartFrame>
   );
 }
+
+/** Mean of the values, to tell which curve lies uppermost. */
+const heightOf = ({ points }: Curve) => points.reduce((sum, { y }) => sum + (y ?? 0), 0) / points.length;
 
 const nameOf = ({ symbol, words }: AxisTitle) => words ?? symbol ?? '';
 

@@ -10,7 +10,7 @@ import {
   XAxis,
   YAxis,
 } from 'recharts';
-import { axisTicks, type AxisRange } from './axis-ticks';
+import { axisTicks, showsPowers, type AxisRange } from './axis-ticks';
 import { AxisTitleText, TickText, type AxisTitle } from './plot-text';
 
 export interface PlotAxis extends AxisRange {
@@ -112,7 +112,7 @@ function Axes({ x, y }: { x: PlotAxis; y: PlotAxis }) {
         <g key={value}>
           <path d={`M${left} ${plot.y(value)}H${right}`} stroke="var(--line)" />
           <path d={`M${left - 6} ${plot.y(value)}H${left}`} stroke="var(--ink-2)" />
-          <TickText value={value} log={!!y.log} x={left - 10} y={plot.y(value) + 4} anchor="end" />
+          <TickText value={value} log={showsPowers(y)} x={left - 10} y={plot.y(value) + 4} anchor="end" />
         </g>
       ))}
       {yTicks.minor.map((value) => (
@@ -122,7 +122,7 @@ function Axes({ x, y }: { x: PlotAxis; y: PlotAxis }) {
         <g key={value}>
           {x.log ? <path d={`M${plot.x(value)} ${top}V${bottom}`} stroke="var(--line)" /> : null}
           <path d={`M${plot.x(value)} ${bottom}v6`} stroke="var(--ink-2)" />
-          <TickText value={value} log={!!x.log} x={plot.x(value)} y={bottom + 20} />
+          <TickText value={value} log={showsPowers(x)} x={plot.x(value)} y={bottom + 20} />
         </g>
       ))}
       {xTicks.minor.map((value) => (

@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { axisTicks, decadeRange, paddedRange, roundStep } from '@/components/charts/axis-ticks';
+import { axisTicks, showsPowers, decadeRange, paddedRange, roundStep } from '@/components/charts/axis-ticks';
 import { chartCell, chartCsv } from '@/components/charts/chart-table';
 import { envelope } from '@/components/charts/envelope';
 import { labelBin, pdfBands, pdfPoints, pdfRanges, type PdfBin } from '@/components/charts/pdf-series';
@@ -33,6 +33,12 @@ describe('axes', () => {
     expect(minor).toHaveLength(16);
     expect(decadeRange([0.03, 7])).toEqual({ min: 0.01, max: 10, log: true });
     expect(decadeRange([0, -1])).toBeNull();
+  });
+
+  it('of less than two decades name 2 and 5 too', () => {
+    expect(axisTicks({ min: 3, max: 70, log: true }).major).toEqual([5, 10, 20, 50]);
+    expect(showsPowers({ min: 3, max: 70, log: true })).toBe(false);
+    expect(showsPowers({ min: 1, max: 100, log: true })).toBe(true);
   });
 
   it('write numbers with thin spaces and a real minus', () => {
