@@ -1,50 +1,40 @@
-import { kernelsOfThisProcess } from '@/jobs/compute/kernels';
 import type { StackReader } from '@/stacks/open-stack';
 import { measuredTracks } from '@/tracking/assess/measured-tracks';
 import { createDetector } from '@/tracking/detect';
-import { createMatchedFilter } from '@/tracking/detection/matched-filter';
+import { levelForFalseMaxima } from '@/tracking/detection/threshold';
+import type { Kernels } from '@/tracking/kernels/kernels';
 import { linkSpots } from '@/tracking/link';
 import { measureImage, pickModelFrames } from '@/tracking/measure-image';
 import { resolveRecipe } from '@/tracking/recipe';
 import { createSpotSink } from '@/tracking/spots';
-import type { Frame, Recipe, Tracks } from '@/tracking/types';
+import type { Frame, ImageModel, Recipe, Tracks } from '@/tracking/types';
+import { cpuSeconds } from './cpu-seconds';
 import type { PipelineRun } from './pipeline-run';
 
-const MICRO = 1e-6;
-const LINKINGS_COLD = 4;
-
-/** CPU time of a piece of work in this process, s: other programs on the machine don't count. */
-async function cpuSeconds(work: () => void | Promise<void>): Promise<number> {
-  const before = process.cpuUsage();
-  await work();
-  const { user, system } = process.cpuUsage(before);
-  return MICRO * (user + system);
-}
+const PIXEL_SIZE_M = 1e-5;
 
 /** The core on one thread, every setting automatic but the effort; frames come from the indexed stack. */
-export async function runCore(stack: StackReader, effort: Recipe['effort']): Promise<PipelineRun> {
+export async function runCore(
+  stack: StackReader,
+  effort: Recipe['effort'],
+  kernels: Kernels,
+): Promise<PipelineRun> {
   const { width, height, frames } = stack;
-  const pixels = width * height;
-  const room: Frame = { width, height, counts: new Float32Array(pixels) };
+  const room: Frame = { width, height, counts: new Float32Array(width * height) };
   const reading = await cpuSeconds(async () => {
     for (let f = 0; f < frames; f++) await stack.readFrame(f, room);
   });
 
   const picked: Frame[] = [];
-  for (const f of pickModelFrames(frames, pixels)) picked.push(await stack.readFrame(f));
-  let model = measureImage(picked.slice(0, 2), { effort });
+  for (const f of pickModelFrames(frames, width * height)) picked.push(await stack.readFrame(f));
+  let model!: ImageModel;
   const measuring = await cpuSeconds(() => {
     model = measureImage(picked, { effort });
   });
-  const recipe = resolveRecipe({ effort }, { ...model, frames, pixelSizeM: 1e-5 });
+  const recipe = resolveRecipe({ effort }, { ...model, frames, pixelSizeM: PIXEL_SIZE_M });
+  const search = await searchSeconds(kernels, model, recipe, picked);
 
-  const matched = createMatchedFilter(width, height, recipe.spotSizePx);
-  const response = new Float32Array(pixels);
-  const filter = await cpuSeconds(() => {
-    for (let f = 0; f < frames; f++) matched.apply(room.counts, response);
-  });
-
-  const detector = createDetector(model, recipe, kernelsOfThisProcess());
+  const detector = createDetector(model, recipe, kernels);
   const sink = createSpotSink();
   const throughReading = await cpuSeconds(async () => {
     for (let f = 0; f < frames; f++) {
@@ -52,22 +42,46 @@ export async function runCore(stack: StackReader, effort: Recipe['effort']): Pro
       detector.detect(room, f, sink);
     }
   });
-  const detection = Math.max(0, throughReading - reading);
   const spots = sink.spots();
-  // One call links the whole recording, so it takes a few until the compiler is done with it.
-  for (let i = 0; i < LINKINGS_COLD; i++) linkSpots(spots, { frames, width, height }, recipe);
-  let tracks: Tracks | null = null;
+  let tracks!: Tracks;
   const linking = await cpuSeconds(() => {
     tracks = linkSpots(spots, { frames, width, height }, recipe);
   });
-  const made = tracks as Tracks | null;
-  if (!made) throw new Error('Linking gave nothing.');
   return {
-    name: `${effort} effort`,
-    seconds: { reading, measuring, filter, detection, linking, whole: measuring + throughReading + linking },
+    name: `${effort} effort, ${kernels.name}`,
+    seconds: {
+      reading,
+      measuring,
+      search: (search * frames) / picked.length,
+      detection: Math.max(0, throughReading - reading),
+      linking,
+      whole: measuring + throughReading + linking,
+    },
     spots: spots.count,
-    links: made.frame.length - made.count,
+    links: tracks.frame.length - tracks.count,
     peakMB: Number.NaN,
-    points: measuredTracks(made),
+    points: measuredTracks(tracks),
   };
+}
+
+/** Only filter and maxima, on the frames at hand. */
+function searchSeconds(
+  kernels: Kernels,
+  model: ImageModel,
+  recipe: Recipe,
+  picked: readonly Frame[],
+): Promise<number> {
+  const { width, height, offsetCounts, saturationCounts } = model;
+  const spotSigmaPx = recipe.spotSizePx;
+  const images = kernels.forImages({ width, height, spotSigmaPx });
+  images.bad.set(model.badPixels);
+  images.background.set(model.backgroundE);
+  const level = levelForFalseMaxima(recipe.falseSpotsPerFrame, spotSigmaPx, width * height);
+  return cpuSeconds(() => {
+    for (const { counts } of picked) {
+      images.toElectrons(counts, { offsetCounts, perCount: 1 / recipe.gain, saturationCounts });
+      images.respond({ scale: 1, shift: 0 }, recipe.readNoise_e ** 2);
+      images.findPeaks(level);
+    }
+  });
 }

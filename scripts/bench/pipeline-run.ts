@@ -1,15 +1,17 @@
-import { assessPoints } from '@/tracking/assess';
+import { spotFigures, sumSpotErrors, type FoundSpots, type SpotFigures } from '@/tracking/assess/spot-errors';
 import type { ComparedTracks } from '@/tracking/assess/track-overlap';
-import { scoreTracks } from '@/tracking/assess/track-scores';
+import { scoreTracks, type TrackScores } from '@/tracking/assess/track-scores';
+import type { TrueSpots } from '@/tracking/assess/true-spots';
+import { MIXED_SNR_LEAST } from '@/tracking/studies/mixed-recording';
 import type { BenchRecording } from './recording';
 
-/** CPU seconds of one pass over the recording by one process, warm. */
+/** CPU seconds of one pass over the recording by one process. */
 export interface StageSeconds {
   reading: number;
   /** Measuring the model of the image, once per recording; the script on SciPy is told what it needs. */
   measuring: number;
-  /** Filter alone, a part of detection. */
-  filter: number;
+  /** Filter and maxima, a part of detection. */
+  search: number;
   /** All of detection without reading. */
   detection: number;
   linking: number;
@@ -23,32 +25,36 @@ export interface PipelineRun {
   spots: number;
   links: number;
   peakMB: number;
-  points: ComparedTracks & { sxPx: ArrayLike<number>; syPx: ArrayLike<number> };
+  /** Measured points in tracks. */
+  points: ComparedTracks & FoundSpots;
 }
+
+export type Accuracy = SpotFigures & TrackScores;
 
 /** Accuracy of the points that stand in tracks, by the same measure for every pipeline. */
-export function accuracyOf({ points }: PipelineRun, { scene, camera, frames }: BenchRecording) {
-  const { foundShare, isolatedFoundShare, falseShare, rmsOverBound } = assessPoints(scene, camera, points);
-  const { alpha, jaccard } = scoreTracks(scene, points, frames);
-  return { foundShare, isolatedFoundShare, falseShare, rmsOverBound, alpha, jaccard };
+export function accuracyOf({ points }: PipelineRun, { scene }: BenchRecording, truth: TrueSpots): Accuracy {
+  return {
+    ...spotFigures(sumSpotErrors(scene, truth, points, MIXED_SNR_LEAST)),
+    ...scoreTracks(scene, points, scene.frames),
+  };
 }
 
-/** The run in the middle by time, so that one disturbed round counts for nothing. */
+/** Every stage at its middle time, so that one disturbed round counts for nothing. */
 export function medianRun(runs: readonly PipelineRun[]): PipelineRun {
-  const median = (pick: (seconds: StageSeconds) => number) => {
-    const sorted = runs.map(({ seconds }) => pick(seconds)).sort((a, b) => a - b);
+  const median = (stage: keyof StageSeconds) => {
+    const sorted = runs.map(({ seconds }) => seconds[stage]).sort((a, b) => a - b);
     return sorted[Math.floor(sorted.length / 2)];
   };
   return {
     ...runs[0],
     peakMB: Math.max(...runs.map(({ peakMB }) => peakMB)),
     seconds: {
-      reading: median((s) => s.reading),
-      measuring: median((s) => s.measuring),
-      filter: median((s) => s.filter),
-      detection: median((s) => s.detection),
-      linking: median((s) => s.linking),
-      whole: median((s) => s.whole),
+      reading: median('reading'),
+      measuring: median('measuring'),
+      search: median('search'),
+      detection: median('detection'),
+      linking: median('linking'),
+      whole: median('whole'),
     },
   };
 }

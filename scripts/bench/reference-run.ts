@@ -40,7 +40,7 @@ export async function runReference(
     seconds: {
       reading: seconds.reading,
       measuring: 0,
-      filter: seconds.filter,
+      search: seconds.filter + seconds.maxima,
       detection,
       linking: seconds.linking,
       whole: seconds.reading + detection + seconds.linking,
@@ -68,5 +68,6 @@ async function readPoints(path: string): Promise<PipelineRun['points']> {
     yPx: rows.map((row) => values[row + 2]),
     sxPx: unstated,
     syPx: unstated,
+    flags: new Uint8Array(rows.length),
   };
 }

@@ -1,101 +1,64 @@
-import { accuracyOf, type PipelineRun, type StageSeconds } from './pipeline-run';
-import type { BenchRecording } from './recording';
+import { lookAtTruth } from '@/tracking/assess/true-spots';
+import { pipelinesOf, type Comparison } from './compare';
+import { accuracyOf, type Accuracy, type PipelineRun, type StageSeconds } from './pipeline-run';
 import { figure, textTable } from './text-table';
-import { wholeSeconds, type WorkersRun } from './workers-run';
 
-/** Throughputs of one core, stage by stage, and how many times the reference's each is. */
-export function speedTable(
-  runs: readonly PipelineRun[],
-  reference: PipelineRun | null,
-  { megapixels }: BenchRecording,
-): string {
-  const all = reference ? [reference, ...runs] : runs;
-  const speed = (seconds: number, times: number) => {
-    const ratio = reference ? ` (${figure(times)}x)` : '';
-    return `${figure(megapixels / seconds)}${ratio}`;
-  };
-  const stage = (label: string, name: keyof StageSeconds) => [
-    label,
-    ...all.map(({ seconds }) => speed(seconds[name], (reference?.seconds[name] ?? NaN) / seconds[name])),
-  ];
+/** Throughputs of one core, stage by stage, and how many times the script's each is. */
+export function speedTable(comparison: Comparison): string {
+  const { plainScript, tunedScript, cold, recording } = comparison;
+  const all = [...pipelinesOf(comparison), cold];
+  const beside = (value: number, ofScript: number | undefined) =>
+    ofScript === undefined ? figure(value) : `${figure(value)} (${figure(value / ofScript)}x)`;
   const rate = (label: string, amount: (run: PipelineRun) => number, name: keyof StageSeconds) => {
     const perSecond = (run: PipelineRun) => amount(run) / run.seconds[name];
-    return [
-      label,
-      ...all.map((run) => {
-        const ratio = reference ? ` (${figure(perSecond(run) / perSecond(reference))}x)` : '';
-        return `${figure(perSecond(run))}${ratio}`;
-      }),
-    ];
+    const ofScript = plainScript ? perSecond(plainScript) : undefined;
+    return [label, ...all.map((run) => beside(perSecond(run), ofScript))];
   };
+  const pixels = (label: string, name: keyof StageSeconds) => rate(label, () => recording.megapixels, name);
   return textTable([
     ['one core, CPU time', ...all.map(({ name }) => name)],
-    stage('reading, Mpx/s', 'reading'),
+    pixels('reading, Mpx/s', 'reading'),
     ['measuring the image, s', ...all.map(({ seconds }) => figure(seconds.measuring))],
-    stage('filter, Mpx/s', 'filter'),
-    stage('detection, Mpx/s', 'detection'),
+    pixels('filter and maxima, Mpx/s', 'search'),
+    pixels('detection, Mpx/s', 'detection'),
     rate('detection, spots/s', ({ spots }) => spots, 'detection'),
-    stage('linking, Mpx/s', 'linking'),
     rate('linking, links/s', ({ links }) => links, 'linking'),
-    stage('whole, Mpx/s', 'whole'),
-    ['reading, share', ...all.map(({ seconds }) => figure(seconds.reading / seconds.whole))],
+    pixels('whole, Mpx/s', 'whole'),
+    ...(tunedScript
+      ? [['whole, times the tuned script', ...all.map((run) => `${figure(timesOf(run, tunedScript))}x`)]]
+      : []),
+    ['reading, share of the whole', ...all.map(({ seconds }) => figure(seconds.reading / seconds.whole))],
     ['spots', ...all.map(({ spots }) => figure(spots))],
+    ['peak memory of the script, MB', ...all.map(({ peakMB }) => figure(peakMB))],
   ]);
 }
+
+/** How many times as fast a pipeline is as another, from frames to tracks. */
+export const timesOf = (run: PipelineRun, other: PipelineRun): number =>
+  other.seconds.whole / run.seconds.whole;
 
 /** What each pipeline found, beside the truth. */
-export function accuracyTable(runs: readonly PipelineRun[], recording: BenchRecording): string {
-  const scores = runs.map((run) => accuracyOf(run, recording));
-  const row = (label: string, pick: (score: (typeof scores)[number]) => number) => [
+export function accuracyTable(comparison: Comparison): string {
+  const { recording } = comparison;
+  // The plain kernels find what the compiled ones find, but for rounding.
+  const all = pipelinesOf(comparison).filter((run) => run !== comparison.plainKernels);
+  const truth = lookAtTruth(recording.scene, recording.camera);
+  const scores = all.map((run) => accuracyOf(run, recording, truth));
+  const row = (label: string, name: keyof Accuracy) => [
     label,
-    ...scores.map((score) => pick(score).toFixed(3)),
+    ...scores.map((score) => {
+      const value = Number(score[name]);
+      return Number.isFinite(value) ? value.toFixed(3) : '-';
+    }),
   ];
   return textTable([
-    ['points in tracks', ...runs.map(({ name }) => name)],
-    row('found', ({ foundShare }) => foundShare),
-    row('found, isolated', ({ isolatedFoundShare }) => isolatedFoundShare),
-    row('false', ({ falseShare }) => falseShare),
-    row('RMS error / bound', ({ rmsOverBound }) => rmsOverBound),
-    row('alpha', ({ alpha }) => alpha),
-    row('Jaccard', ({ jaccard }) => jaccard),
+    ['points in tracks', ...all.map(({ name }) => name)],
+    row('recall', 'recall'),
+    row('precision', 'precision'),
+    row('RMS error / bound, isolated, SNR >= 4', 'rmsOverBound'),
+    row('RMS of error / stated error', 'residualRms'),
+    row('alpha', 'alpha'),
+    row('JSC', 'jaccard'),
+    row('JSC of tracks', 'jaccardTracks'),
   ]);
-}
-
-/** The product's own processes by the clock on the wall, and what a second worker brings. */
-export function workersTable(
-  runs: readonly WorkersRun[],
-  { megapixels }: BenchRecording,
-  reference: PipelineRun | null,
-): string {
-  const columns = runs.flatMap(({ workers, cold, warm, peakMB }) => [
-    { head: `${workers}, cold`, analysis: cold, peakMB: Number.NaN },
-    { head: `${workers}, warm`, analysis: warm, peakMB },
-  ]);
-  const row = (label: string, pick: (column: (typeof columns)[number]) => number) => [
-    label,
-    ...columns.map((column) => figure(pick(column))),
-  ];
-  const [first] = runs;
-  return [
-    textTable([
-      ['workers, wall clock', ...columns.map(({ head }) => head)],
-      row('check, Mpx/s', ({ analysis }) => megapixels / analysis.timingsS.check),
-      row('measure image, s', ({ analysis }) => analysis.timingsS['measure-image']),
-      row('detection, Mpx/s', ({ analysis }) => megapixels / analysis.timingsS['detect-spots']),
-      row('detection, spots/s', ({ analysis }) => analysis.spots / analysis.timingsS['detect-spots']),
-      row('share of reading', ({ analysis }) => analysis.readingShare),
-      row('linking, links/s', ({ analysis: { tracks, timingsS } }) => (tracks.frame.length - tracks.count) / timingsS['link-tracks']), // prettier-ignore
-      row('measure flow, points/s', ({ analysis: { tracks, timingsS } }) => tracks.frame.length / timingsS['measure-flow']), // prettier-ignore
-      row('whole, Mpx/s', ({ analysis }) => megapixels / wholeSeconds(analysis)),
-      row('peak memory, MB', ({ peakMB }) => peakMB),
-    ]),
-    ...runs
-      .slice(1)
-      .map(
-        ({ workers, warm }) =>
-          `${workers} workers over 1, warm: detection ${(first.warm.timingsS['detect-spots'] / warm.timingsS['detect-spots']).toFixed(2)}x, ` +
-          `whole ${(wholeSeconds(first.warm) / wholeSeconds(warm)).toFixed(2)}x.`,
-      ),
-    ...(reference ? [`Peak memory of the script on SciPy: ${figure(reference.peakMB)} MB.`] : []),
-  ].join('\n');
 }

@@ -1,39 +1,53 @@
 import { mkdir } from 'node:fs/promises';
+import { loadavg } from 'node:os';
 import { join } from 'node:path';
 import { ComputePool } from '@/jobs/compute/pool';
-import { analyseStack, type LocalAnalysis } from '@/jobs/local/analyse-stack';
+import { analyseStack, type LocalAnalysis, type LocalStage } from '@/jobs/local/analyse-stack';
 import { localStack } from '@/jobs/local/local-stack';
-import { peakOfChildrenMB } from './processes';
-import type { BenchRecording } from './recording';
+import type { Conditions } from '@/tracking/types';
+import { figure, textTable } from './text-table';
 
-export interface WorkersRun {
-  workers: number;
-  cold: LocalAnalysis;
-  warm: LocalAnalysis;
-  /** Largest resident memory of a computing process, MB. */
-  peakMB: number;
+/** A stack to analyse from bytes to numbers. */
+export interface WorkersStack {
+  name: string;
+  path: string;
+  megapixels: number;
+  conditions: Conditions;
 }
 
-const CONDITIONS = { pixelSize_m: 1e-5, frameInterval_s: 5e-3, sheetThickness_m: 1e-4 };
+export interface WorkersRun {
+  stack: WorkersStack;
+  workers: number;
+  /** The first analysis of these processes, and the quickest of those that followed. */
+  cold: LocalAnalysis;
+  warm: LocalAnalysis;
+  load: number;
+}
 
-/** The whole road in worker processes, twice: the first round also warms their compilers. */
+const WARM_ROUNDS = 2;
+
+/** The whole road in worker processes; the first round also warms their compilers. */
 export async function runWorkers(
   workers: number,
-  recording: BenchRecording,
+  stack: WorkersStack,
   folder: string,
   childPath: string,
 ): Promise<WorkersRun> {
   const pool = new ComputePool(workers, { childPath });
-  const source = await localStack(recording.tiffPath);
+  const source = await localStack(stack.path);
   const round = async (name: string) => {
-    const workDir = join(folder, `${workers}-${name}`);
+    const workDir = join(folder, `${stack.name}-${workers}-${name}`);
     await mkdir(workDir);
-    return analyseStack({ source, workDir, conditions: CONDITIONS, recipe: {}, chunkFrames: 12 }, pool);
+    return analyseStack({ source, workDir, conditions: stack.conditions, recipe: {} }, pool);
   };
   try {
     const cold = await round('cold');
-    const warm = await round('warm');
-    return { workers, cold, warm, peakMB: peakOfChildrenMB() };
+    let warm = await round('warm');
+    for (let i = 1; i < WARM_ROUNDS; i++) {
+      const again = await round(`warm-${i}`);
+      if (wholeSeconds(again) < wholeSeconds(warm)) warm = again;
+    }
+    return { stack, workers, cold, warm, load: loadavg()[0] };
   } finally {
     await pool.close();
   }
@@ -42,3 +56,37 @@ export async function runWorkers(
 /** Wall-clock time of all stages, s. */
 export const wholeSeconds = ({ timingsS }: LocalAnalysis): number =>
   Object.values(timingsS).reduce((sum, seconds) => sum + seconds, 0);
+
+/** How many times as fast the second is as the first, warm: all of it, and detection alone. */
+export function gainOf(one: WorkersRun, two: WorkersRun) {
+  const detection = ({ warm }: WorkersRun) => warm.timingsS['detect-spots'];
+  return {
+    whole: wholeSeconds(one.warm) / wholeSeconds(two.warm),
+    detection: detection(one) / detection(two),
+  };
+}
+
+/** The product's own processes by the clock on the wall. */
+export function workersTable(runs: readonly WorkersRun[]): string {
+  const columns = runs.flatMap(({ workers, cold, warm, stack }) => [
+    { head: `${workers}, cold`, analysis: cold, stack },
+    { head: `${workers}, warm`, analysis: warm, stack },
+  ]);
+  const row = (label: string, pick: (column: (typeof columns)[number]) => number) => [
+    label,
+    ...columns.map((column) => figure(pick(column))),
+  ];
+  const seconds = (label: string, stage: LocalStage) =>
+    row(label, ({ analysis }) => analysis.timingsS[stage]);
+  return textTable([
+    [`workers, ${runs[0].stack.name}`, ...columns.map(({ head }) => head)],
+    seconds('check, s', 'check'),
+    seconds('measure image, s', 'measure-image'),
+    seconds('detection, s', 'detect-spots'),
+    seconds('linking, s', 'link-tracks'),
+    seconds('measure flow, s', 'measure-flow'),
+    row('whole, s', ({ analysis }) => wholeSeconds(analysis)),
+    row('whole, Mpx/s', ({ analysis, stack }) => stack.megapixels / wholeSeconds(analysis)),
+    row('share of reading in detection', ({ analysis }) => analysis.readingShare),
+  ]);
+}

@@ -1,10 +1,11 @@
 import { POINT_BRIDGED, type Tracks } from '../types';
 import type { ComparedTracks } from './track-overlap';
 
-/** Points of tracks with their stated standard errors. */
+/** Points of tracks with their stated standard errors and flags. */
 export interface MeasuredTracks extends ComparedTracks {
   sxPx: ArrayLike<number>;
   syPx: ArrayLike<number>;
+  flags: ArrayLike<number>;
 }
 
 /** Tracks without their interpolated points, which are no measurements and count for nothing. */
@@ -20,5 +21,13 @@ export function measuredTracks(tracks: Tracks): MeasuredTracks {
     keptStart[i + 1] = measured;
   }
   const pick = (from: ArrayLike<number>) => Float64Array.from(kept.subarray(0, measured), (p) => from[p]);
-  return { start: keptStart, frame: pick(frame), xPx: pick(xPx), yPx: pick(yPx), sxPx: pick(sxPx), syPx: pick(syPx) }; // prettier-ignore
+  return {
+    start: keptStart,
+    frame: pick(frame),
+    xPx: pick(xPx),
+    yPx: pick(yPx),
+    sxPx: pick(sxPx),
+    syPx: pick(syPx),
+    flags: pick(flags),
+  };
 }

@@ -1,11 +1,19 @@
 import { FOUND_WITHIN_PX, ISOLATED_PX } from '../assess';
 import type { Scene } from '../simulate/scene';
-import { SPOT_OVERLAP, type Spots } from '../types';
+import { SPOT_OVERLAP } from '../types';
+import type { TimedPoints } from './frame-order';
 import { matchPoints, nearestNeighbourPx } from './point-match';
 import type { TrueSpots } from './true-spots';
 
 /** Upper ends of the ranges of distance to the nearest other tracer, px. */
 export const NEIGHBOUR_RANGES_PX = [1, 2, 3, 4, 5, 6, 10, Infinity] as const;
+
+/** Single spots or points of tracks, with their standard errors (NaN where none are stated) and flags. */
+export interface FoundSpots extends TimedPoints {
+  sxPx: ArrayLike<number>;
+  syPx: ArrayLike<number>;
+  flags: ArrayLike<number>;
+}
 
 /** Sums over spots, so that recordings can be pooled by adding. */
 export interface SpotSums {
@@ -34,12 +42,12 @@ export interface SpotSums {
  *
  * @param leastSnr isolated points below it are left out of errors and bounds.
  */
-export function sumSpotErrors(scene: Scene, truth: TrueSpots, spots: Spots, leastSnr: number): SpotSums {
+export function sumSpotErrors(scene: Scene, truth: TrueSpots, spots: FoundSpots, leastSnr: number): SpotSums {
   const partner = matchPoints(scene, spots, scene.frames, FOUND_WITHIN_PX);
   const nearest = nearestNeighbourPx(scene, scene.frames);
   const sums = noSpots();
   sums.truePoints = partner.length;
-  sums.spots = spots.count;
+  sums.spots = spots.frame.length;
   for (let i = 0; i < partner.length; i++) {
     const range = NEIGHBOUR_RANGES_PX.findIndex((end) => nearest[i] <= end);
     sums.trueByDistance[range]++;
