@@ -16,6 +16,14 @@ SEED = 20240607
 FOLDER = Path(__file__).resolve().parent.parent / "fixtures" / "scipy"
 
 
+# Sigma, width, height. Vectors take four pixels, so widths of every remainder, and images smaller than the kernel.
+FILTER_SIZES = [(0.7, 17, 12), (1.2, 24, 19), (2.0, 31, 9), (1.2, 40, 1), (1.5, 4, 3)]
+FILTER_SIZES += [(1.2, 33, 21), (1.0, 1, 37), (1.8, 22, 8), (3.0, 12, 25), (1.2, 1, 1)]
+# Width, height, level, digits: few digits make ties.
+PEAK_SIZES = [(24, 18, -1.0, 3), (31, 17, 0.0, 0), (33, 20, 0.5, 1), (40, 1, 0.0, 0), (1, 29, -0.5, 1), (2, 2, -9.0, 0)]
+PEAK_SIZES += [(5, 3, 0.0, 0), (18, 26, 1.0, 1), (64, 9, 9.0, 1), (1, 1, -9.0, 0)]
+
+
 def write(name, cases):
     made_with = {"scipy": scipy.__version__, "numpy": np.__version__, "seed": SEED}
     text = json.dumps({"madeWith": made_with, "cases": cases}, separators=(",", ":"))
@@ -29,7 +37,7 @@ def rounded(values, digits=9):
 def filters(random):
     """Matched filter: pixel-integrated Gaussian cut at ceil(3 sigma), zeros outside, noise 1 at the border too."""
     cases = []
-    for sigma, width, height in [(0.7, 17, 12), (1.2, 24, 19), (2.0, 31, 9), (1.2, 40, 1), (1.5, 4, 3)]:
+    for sigma, width, height in FILTER_SIZES:
         noise = np.round(random.normal(size=(height, width)), 3)
         reach = max(2, int(np.ceil(3 * sigma)))
         k = np.arange(-reach, reach + 1)
@@ -58,6 +66,29 @@ def filters(random):
     return cases
 
 
+def peaks(random):
+    """Maxima of 3 x 3 pixels; of equal neighbours the first in reading order: earlier ones must be smaller."""
+    earlier = np.array([[1, 1, 1], [1, 0, 0], [0, 0, 0]], dtype=bool)
+    cases = []
+    for width, height, level, digits in PEAK_SIZES:
+        image = np.round(random.normal(size=(height, width)), digits) + 0.0
+
+        def most(footprint):
+            return ndimage.maximum_filter(image, footprint=footprint, mode="constant", cval=-np.inf)
+
+        top = (image > most(earlier)) & (image >= most(earlier[::-1, ::-1])) & (image >= level)
+        cases.append(
+            {
+                "width": width,
+                "height": height,
+                "level": level,
+                "image": image.ravel().tolist(),
+                "at": np.flatnonzero(top).tolist(),
+            }
+        )
+    return cases
+
+
 def assignment(random):
     """Rows may stay alone at cost 0: each has a column of its own beside the shared ones."""
     cases = []
@@ -78,6 +109,36 @@ def assignment(random):
         total = round(float(table[row, column].sum()), 6)
         cases.append({"rows": rows, "columns": columns, "entries": entries, "total": total})
     return cases
+
+
+def uniforms(seed):
+    """The numbers that `createRandom(seed).uniform` of tracking/random.ts gives, so that cases need not be stored."""
+    state = seed
+    while True:
+        state = (state + 0x6D2B79F5) & 0xFFFFFFFF
+        t = ((state ^ (state >> 15)) * (1 | state)) & 0xFFFFFFFF
+        t = ((t + (((t ^ (t >> 7)) * (61 | t)) & 0xFFFFFFFF)) & 0xFFFFFFFF) ^ t
+        yield (t ^ (t >> 14)) / 4294967296
+
+
+def drawn_assignments(trials=4000):
+    """Least totals only; tests/helpers/drawn-assignment.ts draws the same tables."""
+    totals = []
+    for trial in range(trials):
+        draw = uniforms(SEED + trial)
+        rows, columns = 1 + int(12 * next(draw)), 1 + int(12 * next(draw))
+        allowed = 0.05 + 0.95 * next(draw)
+        steps = (1, 3, 10, 1000)[trial % 4]
+        table = np.full((rows, columns + rows), np.inf)
+        table[np.arange(rows), columns + np.arange(rows)] = 0.0
+        for i in range(rows):
+            for j in range(columns):
+                cost = int(steps * next(draw)) - steps // 2 - 1
+                if next(draw) < allowed:
+                    table[i, j] = cost
+        row, column = optimize.linear_sum_assignment(table)
+        totals.append(int(table[row, column].sum()))
+    return totals
 
 
 def tails():
@@ -152,14 +213,16 @@ def least_squares(random):
 def main():
     FOLDER.mkdir(parents=True, exist_ok=True)
     # A stream each: a change of one set of cases leaves the others as they are.
-    streams = [np.random.default_rng([SEED, i]) for i in range(5)]
+    streams = [np.random.default_rng([SEED, i]) for i in range(6)]
     write("filters", filters(streams[0]))
     write("assignment", assignment(streams[1]))
+    write("drawn-assignments", drawn_assignments())
     write("tails", tails())
     write("pchip", pchip(streams[2]))
     write("wilson", wilson())
     write("robust", robust(streams[3]))
     write("non-negative-least-squares", least_squares(streams[4]))
+    write("peaks", peaks(streams[5]))
 
 
 main()

@@ -1,16 +1,20 @@
 import { describe, expect, test } from 'vitest';
 import { createAssignmentSolver } from '@/tracking/assign';
 import { createMatchedFilter } from '@/tracking/detection/matched-filter';
+import { DARK_VARIANCE_E2 } from '@/tracking/detection/second-look';
 import { chiSquareTail } from '@/tracking/estimates/random-effects';
 import { pchip } from '@/tracking/helium/pchip';
+import { plainKernels } from '@/tracking/kernels/plain-kernels';
 import { poissonTail } from '@/tracking/pairs/chance-approaches';
 import { NonNegativeLeastSquares } from '@/tracking/pairs/non-negative-least-squares';
 import { median, standardise } from '@/tracking/populations/feature-table';
 import { FEATURES } from '@/tracking/populations/track-features';
 import { wilsonInterval } from '@/tracking/populations/wilson';
 import { sortedQuantile } from '@/tracking/quantile';
+import { drawnAssignment } from '@/tests/helpers/drawn-assignment';
 import { expectWithin } from '@/tests/helpers/expect-within';
 import { scipyCases } from '@/tests/helpers/scipy-fixture';
+import { simdKernels } from '@/tests/helpers/simd-kernels';
 
 // Expected values: SciPy 1.10.1, see tests/fixtures/scipy/README.md.
 
@@ -37,6 +41,19 @@ describe('the matched filter', () => {
     const response = apply(one);
     expect(response).toHaveLength(one.response.length);
     response.forEach((value, i) => expectWithin(value, one.response[i], { abs: 5e-6 }));
+  });
+
+  test.each(cases)('of the compiled kernels on $width x $height px is the same correlation', (one) => {
+    const { width, height, sigmaPx: spotSigmaPx, noise } = one;
+    const images = simdKernels().forImages({ width, height, spotSigmaPx });
+    images.toElectrons(Float32Array.from(noise), {
+      offsetCounts: 0,
+      perCount: 1,
+      saturationCounts: Infinity,
+    });
+    // No light, and with what is added to the read variance a noise of 1 electron.
+    images.respond({ scale: 0, shift: 0 }, 1 - DARK_VARIANCE_E2);
+    one.response.forEach((value, i) => expectWithin(images.response[i], value, { abs: 5e-6 }));
   });
 
   test('is the Gaussian filter of a spot widened by a pixel, away from the border', () => {
@@ -83,6 +100,50 @@ test('assignment costs as little as linear_sum_assignment finds, on every shape,
     });
     expectWithin(sum, total, { abs: 1e-6 });
   }
+});
+
+test('assignment costs as little as linear_sum_assignment finds on 4,000 drawn tables, many of them full of ties', () => {
+  const totals = scipyCases<number[]>('drawn-assignments');
+  expect(totals).toHaveLength(4000);
+  const solver = createAssignmentSolver();
+  totals.forEach((expected, trial) => {
+    const { costs, costOf } = drawnAssignment(trial);
+    const columnOfRow = new Int32Array(costs.rows);
+    solver.solve(costs, columnOfRow);
+    const taken = [...columnOfRow].filter((j) => j >= 0);
+    if (new Set(taken).size !== taken.length) throw new Error(`Case ${trial} uses a column twice.`);
+    const total = [...columnOfRow].reduce((sum, j, i) => sum + (j < 0 ? 0 : costOf(i, j)), 0);
+    // Whole numbers: a pair that is forbidden would give NaN.
+    if (total !== expected) throw new Error(`Case ${trial} costs ${total}, but ${expected} is possible.`);
+  });
+});
+
+describe('maxima of an image', () => {
+  interface PeakCase {
+    width: number;
+    height: number;
+    level: number;
+    image: number[];
+    at: number[];
+  }
+  const cases = scipyCases<PeakCase[]>('peaks');
+
+  test.each(cases)('on $width x $height px from $level on are those of maximum_filter, ties too', (one) => {
+    const { width, height, level, image, at } = one;
+    for (const kernels of [plainKernels, simdKernels()]) {
+      const images = kernels.forImages({ width, height, spotSigmaPx: 1.2 });
+      images.response.set(image);
+      const found = images.findPeaks(level);
+      expect(Array.from(found.at.subarray(0, found.count)), kernels.name).toEqual(at);
+    }
+  });
+
+  test('were found, and ties with them, or the cases above would ask nothing', () => {
+    const count = cases.reduce((sum, { at }) => sum + at.length, 0);
+    expect(count).toBeGreaterThan(100);
+    const tied = cases.some(({ image }) => image.length > 100 && new Set(image).size < 12);
+    expect(tied).toBe(true);
+  });
 });
 
 describe('tail chances', () => {
