@@ -19,35 +19,27 @@ export interface SimdExports {
     perCount: number,
     saturation: number,
   ): void;
-  noiseRow(
+  respond(
     electrons: number,
     usable: number,
     background: number,
     bare: number,
     model: number,
+    response: number,
+    width: number,
+    height: number,
     noise: number,
-    pixels: number,
+    band: number,
+    bandRows: number,
+    paddedWidth: number,
+    weights: number,
+    reach: number,
+    correctionX: number,
+    correctionY: number,
     scale: number,
     shift: number,
     floor: number,
     saturation: number,
-  ): void;
-  correlateRow(
-    row: number,
-    weights: number,
-    reach: number,
-    correction: number,
-    out: number,
-    pixels: number,
-  ): void;
-  correlateColumns(
-    row: number,
-    stride: number,
-    weights: number,
-    reach: number,
-    correction: number,
-    out: number,
-    pixels: number,
   ): void;
   findPeaks(response: number, width: number, height: number, level: number, peaks: number): number;
   gatherLight(

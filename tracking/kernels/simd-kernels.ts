@@ -28,12 +28,9 @@ function simdImages(spec: ImageSpec, instantiate: InstantiateSimd): FrameKernels
 
   arena.floats(at.weights, reach + 1).set(kernel.weight);
   arena.floats(at.correctionX, width).set(edgeCorrection(kernel, width));
-  const correctionY = edgeCorrection(kernel, height);
+  arena.floats(at.correctionY, height).set(edgeCorrection(kernel, height));
   const electrons = arena.floats(at.electrons, pixels);
   const response = arena.floats(at.response, pixels);
-  const noise = arena.floats(at.noise, at.noiseLength);
-  const rowBytes = 4 * at.paddedWidth;
-  const band = arena.floats(at.band, at.paddedWidth * (at.bandRows + 2 * reach));
   const peaks: Peaks = { count: 0, at: arena.integers(at.peaks, at.peaksMost) };
   let saturationE = Infinity;
 
@@ -54,61 +51,28 @@ function simdImages(spec: ImageSpec, instantiate: InstantiateSimd): FrameKernels
   };
 
   const respond: FrameKernels['respond'] = ({ scale, shift }, readVariance) => {
-    const floor = readVariance + DARK_VARIANCE_E2;
-    const weightX = at.weights;
-    const noiseStart = at.noise + 4 * reach;
-
-    /** Row `y` of the frame, in units of noise and correlated along x, into a row of the band. */
-    const fetchRow = (y: number, place: number) => {
-      if (y >= height) {
-        band.fill(0, place * at.paddedWidth, (place + 1) * at.paddedWidth);
-        return;
-      }
-      const from = y * width;
-      simd.noiseRow(
-        at.electrons + 4 * from,
-        at.usable + from,
-        at.background + 4 * from,
-        at.bare + 4 * from,
-        at.model + 4 * from,
-        noiseStart,
-        width,
-        scale,
-        shift,
-        floor,
-        saturationE,
-      );
-      // Behind the last pixel stands the beginning of the next row.
-      noise.fill(0, reach + width, reach + Math.ceil(width / 4) * 4);
-      simd.correlateRow(
-        noiseStart,
-        weightX,
-        reach,
-        at.correctionX,
-        at.band + place * rowBytes,
-        at.paddedWidth,
-      );
-    };
-
-    // Row r of the band holds row top - reach + r of the frame. Above the frame there is nothing.
-    band.fill(0, 0, reach * at.paddedWidth);
-    for (let r = 0; r < reach; r++) fetchRow(r, reach + r);
-    for (let top = 0; top < height; top += at.bandRows) {
-      const rows = Math.min(at.bandRows, height - top);
-      for (let r = 0; r < rows; r++) fetchRow(top + reach + r, 2 * reach + r);
-      for (let r = 0; r < rows; r++) {
-        simd.correlateColumns(
-          at.band + (reach + r) * rowBytes,
-          rowBytes,
-          weightX,
-          reach,
-          correctionY[top + r],
-          at.response + 4 * (top + r) * width,
-          width,
-        );
-      }
-      band.copyWithin(0, rows * at.paddedWidth, (rows + 2 * reach) * at.paddedWidth);
-    }
+    simd.respond(
+      at.electrons,
+      at.usable,
+      at.background,
+      at.bare,
+      at.model,
+      at.response,
+      width,
+      height,
+      at.noise,
+      at.band,
+      at.bandRows,
+      at.paddedWidth,
+      at.weights,
+      reach,
+      at.correctionX,
+      at.correctionY,
+      scale,
+      shift,
+      readVariance + DARK_VARIANCE_E2,
+      saturationE,
+    );
   };
 
   const findPeaks = (level: number): Peaks => {

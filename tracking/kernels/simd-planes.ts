@@ -29,9 +29,10 @@ export interface SimdPlanes {
   weights: number;
   /** f32 factor per column of the response. */
   correctionX: number;
+  /** f32 factor per row. */
+  correctionY: number;
   /** f32, one row of noise with `reach` zeros before it and at least as many after it. */
   noise: number;
-  noiseLength: number;
   /** f32, rows that are correlated along x: `bandRows` of them and `reach` before and after. */
   band: number;
   bandRows: number;
@@ -52,7 +53,6 @@ export function reservePlanes(
   const floats = (length: number) => arena.reserve(4 * length + SLACK_BYTES);
   const bytes = (length: number) => arena.reserve(length + SLACK_BYTES);
   const paddedWidth = Math.ceil(width / 16) * 16;
-  const noiseLength = paddedWidth + 2 * reach;
   const peaksMost = Math.ceil(width / 2) * Math.ceil(height / 2);
   const lightMost = Math.ceil(pixels / lightStride(pixels));
   const bandRows = Math.min(BAND_ROWS, height);
@@ -72,8 +72,8 @@ export function reservePlanes(
     lightSums: floats(6),
     weights: floats(reach + 1),
     correctionX: floats(paddedWidth),
-    noise: floats(noiseLength),
-    noiseLength,
+    correctionY: floats(height),
+    noise: floats(paddedWidth + 2 * reach),
     band: floats(paddedWidth * (bandRows + 2 * reach)),
     bandRows,
     paddedWidth,

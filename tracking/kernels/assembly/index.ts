@@ -1,7 +1,6 @@
 // WebAssembly kernels, compiled by AssemblyScript. Each has a plain twin in TypeScript that is its oracle.
 // Addresses are bytes in the module's memory; whoever calls lays out that memory and starts at `heapBase`.
 
-export { correlateColumns, correlateRow } from './correlate';
 export { findPeaks } from './find-peaks';
 export { elongateJointFit } from './joint-fit-elongation';
 export { jointFitLikelihood, runJointFit } from './joint-fit';
@@ -11,7 +10,7 @@ export { paintSpot } from './joint-fit-paint';
 export { peakOfResidual } from './joint-fit-residual';
 export { setUpJointFit } from './joint-fit-set-up';
 export { gatherLight, lightSums } from './light-sums';
-export { noiseRow } from './noise-row';
+export { respond } from './respond';
 export { toElectrons } from './to-electrons';
 
 /** First byte that the module itself doesn't use. */

@@ -1,0 +1,80 @@
+import { correlateColumns, correlateRow } from './correlate';
+import { noiseRow } from './noise-row';
+
+/**
+ * The frame in units of its own noise (see `noiseRow`), correlated with the spot along x and y. Rows are
+ * correlated along x into a band of rows that stays in the cache, and from there along y.
+ *
+ * @param noise f32, room for `reach` zeros, a row and `reach` zeros
+ * @param band f32, `bandRows` + 2 `reach` rows of `paddedWidth` pixels, which is a multiple of 16
+ * @param weights f32 at distance 0 .. reach
+ * @param correctionX f32 factor per column @param correctionY f32 factor per row
+ */
+export function respond(
+  electrons: usize,
+  usable: usize,
+  background: usize,
+  bare: usize,
+  model: usize,
+  response: usize,
+  width: i32,
+  height: i32,
+  noise: usize,
+  band: usize,
+  bandRows: i32,
+  paddedWidth: i32,
+  weights: usize,
+  reach: i32,
+  correctionX: usize,
+  correctionY: usize,
+  scale: f32,
+  shift: f32,
+  floor: f32,
+  saturation: f32,
+): void {
+  const stride = paddedWidth << 2;
+  const first = noise + ((<usize>reach) << 2);
+  // What noiseRow writes behind the last pixel belongs to the next row.
+  const behind = first + ((<usize>width) << 2);
+  const behindBytes = (((width + 3) & ~3) - width) << 2;
+  // Row r of the band holds row top - reach + r of the frame. Above the frame there is nothing.
+  memory.fill(band, 0, reach * stride);
+  let next = 0;
+  let place = band + <usize>(reach * stride);
+  for (let top = 0; top < height; top += bandRows) {
+    const rows = min(bandRows, height - top);
+    for (; next < top + rows + reach; next++) {
+      if (next < height) {
+        const at = <usize>next * <usize>width;
+        const far = at << 2;
+        noiseRow(
+          electrons + far,
+          usable + at,
+          background + far,
+          bare + far,
+          model + far,
+          first,
+          width,
+          scale,
+          shift,
+          floor,
+          saturation,
+        );
+        memory.fill(behind, 0, behindBytes);
+        correlateRow(first, weights, reach, correctionX, place, paddedWidth);
+      } else {
+        memory.fill(place, 0, stride);
+      }
+      place += stride;
+    }
+    for (let r = 0; r < rows; r++) {
+      const y = top + r;
+      const row = band + <usize>((reach + r) * stride);
+      const factor = load<f32>(correctionY + ((<usize>y) << 2));
+      const out = response + ((<usize>y * <usize>width) << 2);
+      correlateColumns(row, stride, weights, reach, factor, out, width);
+    }
+    memory.copy(band, band + <usize>(rows * stride), 2 * reach * stride);
+    place = band + <usize>(2 * reach * stride);
+  }
+}
