@@ -1,0 +1,113 @@
+import { mkdtemp, rm } from 'node:fs/promises';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+import { afterAll, beforeAll, expect, test } from 'vitest';
+import { chunksOf } from '@/jobs/chunk-plan';
+import { kernelsOfThisProcess } from '@/jobs/compute/kernels';
+import { ComputePool } from '@/jobs/compute/pool';
+import { makeDemoStack } from '@/jobs/demo/make-demo-stack';
+import { localStack } from '@/jobs/local/local-stack';
+import { openStack } from '@/stacks/open-stack';
+import { createDetector } from '@/tracking/detect';
+import { linkSpots } from '@/tracking/link';
+import { measureImage, pickModelFrames } from '@/tracking/measure-image';
+import { resolveRecipe } from '@/tracking/recipe';
+import { concatSpots, createSpotSink, decodeSpots, encodeSpots } from '@/tracking/spots';
+import type { Frame, Tracks } from '@/tracking/types';
+import { CONDITIONS, SCENE } from '../helpers/demo-recording';
+import { bundle } from '../helpers/worker-process';
+
+const MINUTES = 60_000;
+const SIZE = { widthPx: 96, heightPx: 80, frames: 48 };
+const PIXEL_SIZE_M = CONDITIONS.pixelSize_m;
+
+let folder: string;
+let stackDir: string;
+const pools: ComputePool[] = [];
+/** What one process makes of the recording, frame after frame. */
+let expected: { spots: Buffer; tracks: Tracks };
+
+beforeAll(async () => {
+  folder = await mkdtemp(join(tmpdir(), 'beadline-same-bits-'));
+  stackDir = folder;
+  const path = join(folder, 'scene.tif');
+  await makeDemoStack(path, { ...SCENE, ...SIZE }, CONDITIONS);
+  const source = await localStack(path);
+  await poolOf(1).run('inspectStack', { source, outDir: stackDir, expectedSha256: [], previews: false });
+  expected = await inThisProcess();
+}, 3 * MINUTES);
+afterAll(async () => {
+  await Promise.all(pools.map((pool) => pool.close()));
+  await rm(folder, { recursive: true, force: true });
+});
+
+function poolOf(workers: number): ComputePool {
+  const pool = new ComputePool(workers, { childPath: bundle('compute-child') });
+  pools.push(pool);
+  return pool;
+}
+
+async function inThisProcess(): Promise<typeof expected> {
+  const stack = await openStack(stackDir);
+  const { width, height, frames } = stack;
+  const all: Frame[] = [];
+  for (let f = 0; f < frames; f++) all.push(await stack.readFrame(f));
+  await stack.close();
+  const model = measureImage(
+    pickModelFrames(frames, width * height).map((f) => all[f]),
+    {},
+  );
+  const recipe = resolveRecipe({}, { ...model, frames, pixelSizeM: PIXEL_SIZE_M });
+  const detector = createDetector(model, recipe, kernelsOfThisProcess());
+  const sink = createSpotSink();
+  all.forEach((frame, f) => detector.detect(frame, f, sink));
+  const spots = sink.spots();
+  return {
+    spots: Buffer.from(encodeSpots(spots)),
+    tracks: linkSpots(spots, { frames, width, height }, recipe),
+  };
+}
+
+test.each([1, 2, 4])(
+  'with %d workers detection and linking give the same bits as in one process, whatever the length of chunks',
+  async (workers) => {
+    const pool = poolOf(workers);
+    const { model, recipe } = await pool.run('measureImage', {
+      stackDir,
+      request: {},
+      pixelSizeM: PIXEL_SIZE_M,
+    });
+    const image = { frames: SIZE.frames, width: SIZE.widthPx, height: SIZE.heightPx };
+    for (const chunkFrames of [1, 5, 7, SIZE.frames]) {
+      const parts = await Promise.all(
+        chunksOf(SIZE.frames, chunkFrames).map(({ firstFrame, frames }) =>
+          pool.run('detectChunk', { stackDir, model, modelKey: 'same', recipe, firstFrame, frames }),
+        ),
+      );
+      const spots = concatSpots(parts.map((part) => decodeSpots(new Uint8Array(part.spots))));
+      expect(spots.count).toBeGreaterThan(SIZE.frames * 5);
+      expect(Buffer.from(encodeSpots(spots)).equals(expected.spots), `chunks of ${chunkFrames}`).toBe(true);
+      const tracks = await pool.run('linkTracks', { chunks: parts.map((part) => part.spots), image, recipe });
+      expect(tracks).toEqual(expected.tracks);
+    }
+  },
+  3 * MINUTES,
+);
+
+test('the detector finds the same bits in a frame whatever frames it saw before', async () => {
+  const stack = await openStack(stackDir);
+  const { width, height, frames } = stack;
+  const all: Frame[] = [];
+  for (let f = 0; f < frames; f++) all.push(await stack.readFrame(f));
+  await stack.close();
+  const model = measureImage(
+    pickModelFrames(frames, width * height).map((f) => all[f]),
+    {},
+  );
+  const recipe = resolveRecipe({}, { ...model, frames, pixelSizeM: PIXEL_SIZE_M });
+  const detector = createDetector(model, recipe, kernelsOfThisProcess());
+  const parts = Array.from({ length: frames }, () => createSpotSink());
+  for (let f = frames - 1; f >= 0; f--) detector.detect(all[f], f, parts[f]);
+  const backwards = encodeSpots(concatSpots(parts.map((sink) => sink.spots())));
+  expect(Buffer.from(backwards).equals(expected.spots)).toBe(true);
+});
