@@ -12,8 +12,8 @@ import type { Frame, ImageModel, RecipeRequest } from './types';
 /** Frames that the image model is measured from. */
 const MODEL_FRAMES = 32;
 /** Statistics of so many pixels are plenty, if they come from this many frames at least. */
-const MODEL_PIXELS_WANTED = 17_000_000;
-const MODEL_FRAMES_WANTED = 8;
+const MODEL_PIXELS_WANTED = 5_300_000;
+const MODEL_FRAMES_WANTED = 12;
 /** The most pixels that the frames may hold together, for the sake of memory. */
 const MODEL_PIXELS_MOST = 120_000_000;
 

@@ -3,6 +3,7 @@ import type { BackgroundDrift } from '../types';
 import { fillGaps } from './block-grid';
 import type { BlockStatistics } from './block-statistics';
 import type { CameraNoise } from './photon-transfer';
+import { smoothTable } from './smooth-table';
 
 /** Background of a recording on blocks. */
 export interface BlockBackground {
@@ -40,30 +41,35 @@ export function fitBackground(
   const meanE = meanOverTime(levelE, pixels, blocks);
   equaliseFrames(levelE, pixels, meanE);
   meanE.set(meanOverTime(levelE, pixels, blocks));
+  const noise = meanE.map((e) => Math.max(0, e || 0) + readNoiseE ** 2 + 1e-6);
   let best: Float64Array | null = null;
   if (frameNumbers !== null && pairs > 1) {
-    const weight = pixels.map(
-      (n, i) => (2 * n) / (Math.max(0, meanE[i % blocks] || 0) + readNoiseE ** 2 + 1e-6),
-    );
+    const weight = pixels.map((n, i) => (2 * n) / noise[i % blocks]);
     best = bestNodes(levelE, weight, meanE, frameNumbers);
   }
-  fillGaps(meanE, grid);
-  for (let b = 0; b < blocks; b++) meanE[b] = Math.max(0, meanE[b]);
-  if (best === null || frameNumbers === null) return { meanE, drift: null };
+  const seen = new Float64Array(blocks);
+  for (let i = 0; i < pixels.length; i++) seen[i % blocks] += 2 * pixels[i];
+  const variance = noise.map((value, b) => value / Math.max(1, seen[b]));
+  const finish = (table: Float64Array, share: number) => {
+    fillGaps(table, grid);
+    const smooth = smoothTable(
+      table,
+      variance.map((value) => value / share),
+      grid,
+    );
+    return smooth.map((e) => Math.max(0, e));
+  };
+  const background: BlockBackground = { meanE: finish(meanE, 1), drift: null };
+  if (best === null || frameNumbers === null) return background;
   const nodes = best.length / blocks;
   const blocksE = new Float32Array(best.length);
   for (let k = 0; k < nodes; k++) {
-    const table = best.slice(k * blocks, (k + 1) * blocks);
-    fillGaps(table, grid);
-    blocksE.set(
-      table.map((e) => Math.max(0, e)),
-      k * blocks,
-    );
+    // Each node rests on its share of the frames.
+    blocksE.set(finish(best.slice(k * blocks, (k + 1) * blocks), 1 / nodes), k * blocks);
   }
-  return {
-    meanE,
-    drift: { columns: grid.columns, rows: grid.rows, nodeFrames: nodeFrames(frameNumbers, nodes), blocksE },
-  };
+  const { columns, rows } = grid;
+  background.drift = { columns, rows, nodeFrames: nodeFrames(frameNumbers, nodes), blocksE };
+  return background;
 }
 
 function meanOverTime(levelE: Float64Array, pixels: Float64Array, blocks: number): Float64Array {

@@ -13,9 +13,13 @@ const NEIGHBOUR_SHARE_MOST = 0.2;
 const BLINKING_EXCESS = 6;
 const BLINKING_ERRORS = 8;
 const BLINKING_NEIGHBOUR_SHARE_MOST = 0.04;
-/** A pixel whose values vary by less than this share of the variance is stuck. */
+/**
+ * A pixel that varies by less than this share of the variance is stuck, or less still where few
+ * frames could make that by chance in one of so many pixels.
+ */
 const STUCK_VARIANCE_SHARE = 0.05;
 const STUCK_FRAMES_LEAST = 8;
+const STUCK_BY_CHANCE = 1e-10;
 
 /**
  * Pixels that can't be trusted: hot, dead, stuck or blinking, told from tracers by neighbours that
@@ -36,12 +40,13 @@ export function findBadPixels(
   const bad = new Uint8Array(pixels);
   const offShare = Math.max(OFF_NOISE, OFF_STANDARD_ERRORS / Math.sqrt(frames));
   const blinkingShare = Math.max(BLINKING_EXCESS, BLINKING_ERRORS * Math.sqrt(2 / frames));
+  const stuckShare = frames < STUCK_FRAMES_LEAST ? 0 : shareByChance(frames);
   let count = 0;
   for (let i = 0; i < pixels; i++) {
     const expected = variance[i];
     const off = sum[i] / pairs;
     const meanSquare = squares[i] / pairs;
-    const stuck = frames >= STUCK_FRAMES_LEAST && meanSquare - off * off < STUCK_VARIANCE_SHARE * expected;
+    const stuck = meanSquare - off * off < stuckShare * expected;
     if (stuck || isHot(i, off, expected) || isBlinking(i, meanSquare - expected, expected)) {
       bad[i] = 1;
       count++;
@@ -60,6 +65,15 @@ export function findBadPixels(
     const around = neighbourMean(squares, i, width, height) / pairs - expected;
     return around < BLINKING_NEIGHBOUR_SHARE_MOST * excess;
   }
+}
+
+/** Lower tail of chi^2 with k degrees of freedom: (x / 2)^(k / 2) / Gamma(k / 2 + 1) for small x. */
+function shareByChance(frames: number): number {
+  const half = 0.5 * (frames - 1);
+  let gamma = half % 1 === 0 ? 1 : Math.sqrt(Math.PI);
+  for (let z = half % 1 === 0 ? 1 : 0.5; z <= half; z++) gamma *= z;
+  const x = 2 * (STUCK_BY_CHANCE * gamma) ** (1 / half);
+  return Math.min(STUCK_VARIANCE_SHARE, x / frames);
 }
 
 function neighbourMean(values: Float32Array, at: number, width: number, height: number): number {

@@ -32,7 +32,7 @@ export function roughLevel(pairs: readonly FramePair[]): RoughLevel {
   const blocks = grid.columns * grid.rows;
   const stretches = Math.min(STRETCHES_MOST, Math.ceil(pairs.length / 2));
   const step = smallestStep(pairs);
-  const samples = new Float64Array(SAMPLES + 1);
+  const samples = new Float64Array(2 * SAMPLES);
   const squares = new Float64Array(blocks);
   const seen = new Float64Array(blocks);
   const tables: Float64Array[] = [];
@@ -107,7 +107,7 @@ function levelAt(tables: readonly Float64Array[], pair: number, pairs: number): 
   return tables[k].map((level, b) => level + (at - k) * (after[b] - level));
 }
 
-/** Values spread evenly over a block and all frames; those without a number are left out. */
+/** Every other pixel of a few rows of a block, other rows in each frame; those without a number are left out. */
 function takeSamples(
   frames: readonly Float32Array[],
   { width, height, columns, rows }: BlockGrid,
@@ -118,19 +118,23 @@ function takeSamples(
   const row = (block - column) / columns;
   const x0 = blockStart(column, columns, width);
   const y0 = blockStart(row, rows, height);
-  const w = blockStart(column + 1, columns, width) - x0;
-  const pixels = w * (blockStart(row + 1, rows, height) - y0);
-  const perFrame = Math.max(1, Math.floor(SAMPLES / frames.length));
-  const step = Math.max(1, pixels / perFrame);
+  const x1 = blockStart(column + 1, columns, width);
+  const high = blockStart(row + 1, rows, height) - y0;
+  const perRow = (x1 - x0 + 1) >> 1;
+  const rowsLooked = Math.min(high, Math.max(1, Math.round(SAMPLES / (perRow * frames.length))));
+  const rowStep = high / rowsLooked;
   let count = 0;
   for (let f = 0; f < frames.length; f++) {
     const counts = frames[f];
-    // Frames take turns at which pixels they show.
-    for (let k = (step * f) / frames.length; k < pixels && count < SAMPLES; k += step) {
-      const pixel = Math.floor(k);
-      const y = Math.floor(pixel / w);
-      const value = counts[(y0 + y) * width + x0 + pixel - y * w];
-      if (value - value === 0) samples[count++] = value;
+    // Frames take turns at which rows they show.
+    const turn = (rowStep * f) / frames.length;
+    for (let k = 0; k < rowsLooked; k++) {
+      const line = (y0 + Math.floor(k * rowStep + turn)) * width;
+      const end = Math.min(line + x1, line + x0 + 2 * (samples.length - count));
+      for (let at = line + x0 + ((k + f) & 1); at < end; at += 2) {
+        const value = counts[at];
+        if (value - value === 0) samples[count++] = value;
+      }
     }
   }
   return count;
