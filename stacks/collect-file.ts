@@ -1,4 +1,5 @@
 import { type ByteSource, fileSource } from './byte-source';
+import { collectHdf5 } from './hdf5/collect-hdf5';
 import { collectNpy } from './npy/collect-npy';
 import { collectPng } from './png/collect-png';
 import { StackRefusal } from './refusal';
@@ -57,9 +58,6 @@ export async function collectFile(
       return collectZip(bytes, path, collector, { expandedBytesMax, signal });
     }
     case 'HDF5':
-      throw new StackRefusal(
-        'HDF5_NOT_READ',
-        'HDF5 files are not read. Save the frames as TIFF, PNG or NPY.',
-      );
+      return collectHdf5(path, collector, place);
   }
 }

@@ -1,10 +1,11 @@
 import { join } from 'node:path';
 import { type Frame } from '@/tracking/types';
-import { fileSource, lazyFileSource } from './byte-source';
+import { fileSource } from './byte-source';
 import { frameReader } from './frame-reader';
 import { type SampleKind } from './frame-layout';
 import { openIndex } from './index-reader';
-import { INDEX_FILE, sourcePath } from './stack-index';
+import { openSource } from './open-source';
+import { INDEX_FILE } from './stack-index';
 
 export interface StackReader {
   readonly width: number;
@@ -34,9 +35,7 @@ export interface StackReader {
 export async function openStack(dir: string): Promise<StackReader> {
   const indexSource = await fileSource(join(dir, INDEX_FILE));
   const index = await openIndex(indexSource);
-  const sources = index.sources.map(({ path, sizeBytes }) =>
-    lazyFileSource(sourcePath(dir, path), sizeBytes),
-  );
+  const sources = index.sources.map((source) => openSource(dir, source));
   const reader = frameReader(sources, index);
   const { width, height, frames, bitDepth, sampleKind, maxCount } = index;
   return {

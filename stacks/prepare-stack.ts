@@ -1,14 +1,15 @@
 import { mkdir, rename, rm, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
-import { type ByteSource, lazyFileSource, memorySource } from './byte-source';
+import { type ByteSource, memorySource } from './byte-source';
 import { checkFrames } from './check-frames';
 import { collectFile } from './collect-file';
 import { collectFolder } from './collect-folder';
 import { encodeStackIndex } from './encode-index';
 import { sha256OfStack } from './hash-files';
 import { openIndex } from './index-reader';
+import { openSource } from './open-source';
 import { StackCollector } from './stack-collector';
-import { INDEX_FILE, sourcePath, type StackIndex } from './stack-index';
+import { INDEX_FILE, type StackIndex } from './stack-index';
 import { type InspectOptions, type ReadyStack, type StackSource } from './stack-report';
 
 /** Progress is told this often, pages and frames. */
@@ -86,9 +87,7 @@ export async function prepareStack(
   const index = collector.build();
   const { frames, width, height, sampleKind } = index;
   const reader = await openIndex(memorySource(encodeStackIndex(index)));
-  const files: ByteSource[] = index.sources.map((file) =>
-    lazyFileSource(sourcePath(outDir, file.path), file.sizeBytes),
-  );
+  const files: ByteSource[] = index.sources.map((file) => openSource(outDir, file));
   try {
     const checked = await checkFrames(files, reader, collector, {
       signal: options.signal,

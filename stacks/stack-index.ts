@@ -1,5 +1,6 @@
 import { isAbsolute, join, relative, sep } from 'node:path';
 import { type FrameLayout, type SampleKind } from './frame-layout';
+import { type Hdf5Frames } from './hdf5/hdf5-source';
 
 /** Facts about a stack that hold for all of its frames. */
 export interface StackShape {
@@ -16,6 +17,8 @@ export interface StackShape {
 export interface IndexedSource {
   path: string;
   sizeBytes: number;
+  /** Set when segments count in the frames of this array, not in the file's own bytes. */
+  hdf5?: Hdf5Frames;
 }
 
 /**

@@ -21,7 +21,7 @@ export function parseUploadMetadata(header: string | null): Record<string, strin
   if (header.length > HEADER_MAX)
     throw new LabError('TOO_LARGE', `Upload-Metadata has at most ${HEADER_MAX} characters.`);
   for (const pair of header.split(',')) {
-    const [key, value = '', ...rest] = pair.trim().split(' ');
+    const [key, value = '', ...rest] = pair.split(' ');
     if (!KEY.test(key) || rest.length > 0 || !BASE64.test(value)) throw invalid();
     if (pairs.some(([known]) => known === key)) throw invalid();
     pairs.push([key, decode(value)]);

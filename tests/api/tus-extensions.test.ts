@@ -74,7 +74,7 @@ describe('creation', () => {
   });
 
   it.each([
-    ['"The key and value MUST be separated by a space."', 'note:YQ=='],
+    ['"The key and value MUST be separated by a space."', 'note\tYQ=='],
     ['"The key and value MUST be separated by a space.": one', 'note YQ== YQ=='],
     ['"The key MUST NOT contain spaces"', `my note ${base64('a')}`],
     ['"The key [...] MUST NOT be empty."', ` ${base64('a')}`],

@@ -168,9 +168,4 @@ describe('an array that is no stack is refused', () => {
     expect((await refuseBytes({ name: 'a.npy', bytes })).offer).toEqual({ usePages: 3 });
     expect((await readBytes({ name: 'a.npy', bytes }, { usePages: 3 })).frames).toEqual(pages.slice(0, 3));
   });
-
-  it('HDF5 is named, with what to do instead', async () => {
-    const bytes = Buffer.from('894844460d0a1a0a0000', 'hex');
-    expect(await refuseBytes({ name: 'a.h5', bytes })).toMatchObject({ code: 'HDF5_NOT_READ', left: [] });
-  });
 });
