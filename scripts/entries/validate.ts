@@ -1,3 +1,5 @@
+import { kernelsOfThisProcess } from '@/jobs/compute/kernels';
+import { kernelsOfThisProcess } from '@/jobs/compute/kernels';
 import { lineDensityTrials, summariseLineDensity } from '@/tracking/studies/line-density';
 import {
   goalsReached,
@@ -12,6 +14,8 @@ import { keepsPromises, studyStandardRecording } from '@/tracking/studies/standa
 /** A study yields one line per case; `kept` is false where a stated promise was broken. */
 type Study = () => Iterable<Record<string, unknown>>;
 
+const kernels = kernelsOfThisProcess();
+
 const SEEDS = [1, 2, 3];
 /** Settings are tried out on other seeds. */
 const MIXED_SEEDS = [1, 2, 3, 4, 5];
@@ -24,7 +28,7 @@ const STUDIES: Record<string, Study> = {
   *'standard-recording'() {
     for (const snr of [3, 4, 6]) {
       for (const seed of SEEDS) {
-        const figures = studyStandardRecording({ snr, seed });
+        const figures = studyStandardRecording({ snr, seed }, {}, kernelsOfThisProcess());
         yield snr === 4 ? { ...figures, kept: keepsPromises(figures) } : { ...figures };
       }
     }
@@ -36,7 +40,7 @@ const STUDIES: Record<string, Study> = {
         const about = { set, snr: snr ?? 'mixed' };
         const runs: MixedRun[] = [];
         for (const seed of MIXED_SEEDS) {
-          const run = studyMixedRecording({ set, seed, snr });
+          const run = studyMixedRecording({ set, seed, snr }, {}, kernelsOfThisProcess());
           const { gainCountsPerE, readNoiseE, spotSigmaPx, trueTracks, tracks } = run;
           const measured = { gainCountsPerE, readNoiseE, spotSigmaPx, trueTracks, tracks };
           runs.push(run);

@@ -8,7 +8,9 @@ import {
 } from '../assess/spot-errors';
 import { scoreTracks, type TrackScores } from '../assess/track-scores';
 import { lookAtTruth } from '../assess/true-spots';
+import type { Kernels } from '../kernels/kernels';
 import { linkSpots } from '../link';
+import type { Kernels } from '../kernels/kernels';
 import { mixedCamera, mixedScene, type MixedOptions } from '../simulate/mixed-scene';
 import type { RecipeRequest } from '../types';
 import { noisyTruth } from './noisy-truth';
@@ -48,11 +50,15 @@ export interface MixedFigures extends SpotFigures, TrackScores {
 }
 
 /** Renders, measures, detects, links and assesses a recording of mixed tracers, gain, noise and spot size estimated. */
-export function studyMixedRecording(options: MixedOptions, request: RecipeRequest = {}): MixedRun {
+export function studyMixedRecording(
+  options: MixedOptions,
+  request: RecipeRequest = {},
+  kernels?: Kernels,
+): MixedRun {
   const scene = mixedScene(options);
   const camera = mixedCamera(options.seed);
   const truth = lookAtTruth(scene, camera);
-  const { model, recipe, spots, tracks } = runRecording(scene, camera, request);
+  const { model, recipe, spots, tracks } = runRecording(scene, camera, request, kernels);
   const size = { frames: scene.frames, width: scene.widthPx, height: scene.heightPx };
   const score = (found: typeof tracks) => scoreTracks(scene, measuredTracks(found), scene.frames);
   return {

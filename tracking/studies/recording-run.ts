@@ -1,4 +1,8 @@
 import { createDetector } from '../detect';
+import type { Kernels } from '../kernels/kernels';
+import { plainKernels } from '../kernels/plain-kernels';
+import type { Kernels } from '../kernels/kernels';
+import { plainKernels } from '../kernels/plain-kernels';
 import { linkSpots } from '../link';
 import { measureImage, pickModelFrames } from '../measure-image';
 import { resolveRecipe } from '../recipe';
@@ -18,15 +22,25 @@ export interface RecordingRun {
   tracks: Tracks;
 }
 
-/** Renders a scene, measures camera and spots, detects and links; what is not requested is automatic. */
-export function runRecording(scene: Scene, camera: SceneCamera, request: RecipeRequest = {}): RecordingRun {
+/**
+ * Renders a scene, measures camera and spots, detects and links; what is not requested is automatic.
+ *
+ * @param kernels what detection works on all pixels with: the plain ones give the same to rounding
+ */
+export function runRecording(
+  scene: Scene,
+  camera: SceneCamera,
+  request: RecipeRequest = {},
+  kernels: Kernels = plainKernels,
+): RecordingRun {
   const { widthPx: width, heightPx: height, frames } = scene;
   const renderer = createRenderer(scene, camera);
   const recorded = Array.from({ length: frames }, (_, index) => renderer.renderFrame(index));
   const frameAt = (index: number): Frame => ({ width, height, counts: Float32Array.from(recorded[index]) });
-  const model = measureImage(pickModelFrames(frames, width * height).map(frameAt), request);
+  const picked = pickModelFrames(frames, width * height);
+  const model = measureImage(picked.map(frameAt), request, picked);
   const recipe = resolveRecipe(request, { ...model, frames, pixelSizeM: PIXEL_SIZE_M });
-  const detector = createDetector(model, recipe);
+  const detector = createDetector(model, recipe, kernels);
   const sink = createSpotSink();
   const room = frameAt(0);
   for (let f = 0; f < frames; f++) {

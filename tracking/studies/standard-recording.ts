@@ -1,6 +1,8 @@
 import { assessPoints, type PointAssessment } from '../assess';
 import { measuredTracks } from '../assess/measured-tracks';
 import { scoreTracks, type TrackScores } from '../assess/track-scores';
+import type { Kernels } from '../kernels/kernels';
+import type { Kernels } from '../kernels/kernels';
 import { standardCamera, standardScene, type StandardOptions } from '../simulate/standard-scene';
 import type { RecipeRequest } from '../types';
 import { runRecording } from './recording-run';
@@ -32,10 +34,11 @@ export interface StandardFigures {
 export function studyStandardRecording(
   options: StandardOptions,
   request: RecipeRequest = {},
+  kernels?: Kernels,
 ): StandardFigures {
   const scene = standardScene(options);
   const camera = standardCamera(options.seed);
-  const { model, tracks } = runRecording(scene, camera, request);
+  const { model, tracks } = runRecording(scene, camera, request, kernels);
   const measured = measuredTracks(tracks);
   return {
     snr: options.snr,
