@@ -1,10 +1,21 @@
 import { assembleTracks } from './linking/assemble-tracks';
 import { BRIGHTNESS_UNTOLD, measureBrightness } from './linking/brightness-statistics';
+import { joinPieces } from './linking/join-pieces';
 import { linkPass, type LinkLimits } from './linking/link-pass';
 import { firstStatistics, measureStatistics } from './linking/motion-statistics';
 import { createSpotTable } from './linking/spot-table';
 import { statisticsSample } from './linking/statistics-sample';
+import { followers, untangle } from './linking/untangle';
 import type { Recipe, Spots, Tracks } from './types';
+
+/** What linking needs of a recipe. */
+export type LinkRecipe = Pick<Recipe, 'longestStepPx' | 'mayVanishFrames' | 'shortestTrackFrames'> &
+  Partial<Pick<Recipe, 'spotSizePx'>>;
+
+/** A second look at close approaches knows what the first one untangled; a third changes next to nothing. */
+const ROUNDS = 2;
+/** Size of a tracer's image where the recipe doesn't say, px. */
+const SPOT_SIZE_PX = 1.3;
 
 /** Size of the recording that the spots are of. */
 export interface RecordingSize {
@@ -22,11 +33,7 @@ export interface RecordingSize {
  * @param spots of the whole recording, by frame, then y, then x.
  * @throws RangeError when spots are out of order or outside the recording's frames.
  */
-export function linkSpots(
-  spots: Spots,
-  size: RecordingSize,
-  recipe: Pick<Recipe, 'longestStepPx' | 'mayVanishFrames' | 'shortestTrackFrames'>,
-): Tracks {
+export function linkSpots(spots: Spots, size: RecordingSize, recipe: LinkRecipe): Tracks {
   checkOrder(spots, size.frames);
   if (!(recipe.longestStepPx > 0)) {
     throw new RangeError(`longestStepPx must be > 0. Received ${recipe.longestStepPx}.`);
@@ -50,6 +57,12 @@ export function linkSpots(
   const brightness = measureBrightness(sample, rough);
   const table = createSpotTable(spots, brightness);
   const before = linkPass(table, limits, motion, brightness);
+  const after = followers(before);
+  for (let round = 0; round < ROUNDS; round++) {
+    joinPieces(table, before, after, limits, motion, brightness);
+    untangle(table, before, after, limits, motion, brightness, recipe.spotSizePx ?? SPOT_SIZE_PX);
+  }
+  joinPieces(table, before, after, limits, motion, brightness);
   return assembleTracks(spots, before, recipe.shortestTrackFrames);
 }
 

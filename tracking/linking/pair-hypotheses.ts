@@ -1,0 +1,302 @@
+import type { BrightnessStatistics } from './brightness-statistics';
+import type { LinkLimits } from './link-pass';
+import type { MotionStatistics } from './motion-statistics';
+import { readTrack } from './read-track';
+import type { SpotTable } from './spot-table';
+import { TracerFilter } from './tracer-filter';
+
+/** Explanations kept from frame to frame. */
+const KEPT = 16;
+const NONE = -1;
+/** Bits of what an explanation does in a frame. */
+const CROSSED = 1;
+const MERGED = 2;
+const FRESH_A = 4;
+const FRESH_B = 8;
+
+/**
+ * Two tracks through their approach, as a beam search over explanations: in each frame spot a is
+ * A's and spot b is B's, or the other way round, or a lone spot is both in one; at the end each
+ * piece that follows continues one of the two.
+ */
+export class PairHypotheses {
+  private readonly forward: TracerFilter;
+  private readonly backward: TracerFilter;
+  /** Slots 2 h and 2 h + 1 hold tracers A and B of explanation h; those of the next frame lie behind. */
+  private readonly alive = new Uint8Array(4 * KEPT + 2);
+  private cost = new Float64Array(KEPT);
+  private nextCost = new Float64Array(KEPT);
+  private readonly candidateCost = new Float64Array(3 * KEPT);
+  private readonly candidate = new Int32Array(3 * KEPT);
+  private history = new Int32Array(64 * KEPT);
+  private spotA = new Int32Array(64);
+  private spotB = new Int32Array(64);
+
+  constructor(
+    private readonly table: SpotTable,
+    private readonly before: Int32Array,
+    private readonly after: Int32Array,
+    private readonly limits: LinkLimits,
+    motion: MotionStatistics,
+    brightness: BrightnessStatistics,
+    private readonly spotSizePx: number,
+  ) {
+    this.forward = new TracerFilter(motion, brightness, table, 1, 4 * KEPT + 2);
+    this.backward = new TracerFilter(motion, brightness, table, -1, 2);
+  }
+
+  /** Decides frames `from .. to` of the tracks that spots `a` and `b` are in; no-op if they are one. */
+  decide(a: number, b: number, from: number, to: number): void {
+    const headA = this.headBefore(a, from);
+    const headB = this.headBefore(b, from);
+    const frames = to - from + 1;
+    if (this.spotA.length < frames) {
+      this.spotA = new Int32Array(2 * frames);
+      this.spotB = new Int32Array(2 * frames);
+      this.history = new Int32Array(2 * frames * KEPT);
+    }
+    const tailA = this.collect(this.firstFrom(a, headA), from, to, this.spotA);
+    const tailB = this.collect(this.firstFrom(b, headB), from, to, this.spotB);
+    if ((headA >= 0 && headA === headB) || (tailA >= 0 && tailA === tailB)) return;
+    let spots = 0;
+    for (let k = 0; k < frames; k++) {
+      if (this.spotA[k] >= 0) spots++;
+      if (this.spotB[k] < 0) continue;
+      if (this.spotA[k] === this.spotB[k]) return;
+      spots++;
+    }
+    if (spots === 0 && (headA < 0 || headB < 0) && (tailA < 0 || tailB < 0)) return;
+
+    this.alive[0] = this.readHead(0, headA, from);
+    this.alive[1] = this.readHead(1, headB, from);
+    this.cost[0] = 0;
+    let kept = 1;
+    for (let k = 0; k < frames; k++) kept = this.step(k, kept);
+    if (tailA >= 0) readTrack(this.backward, 0, this.table, this.after, tailA);
+    if (tailB >= 0) readTrack(this.backward, 1, this.table, this.after, tailB);
+    let best = 0;
+    let bestCost = Infinity;
+    let bestCrossed = false;
+    for (let h = 0; h < kept; h++) {
+      const straight =
+        this.cost[h] + this.tailCost(2 * h, tailA, 0, to) + this.tailCost(2 * h + 1, tailB, 1, to);
+      const crossed =
+        this.cost[h] + this.tailCost(2 * h, tailB, 1, to) + this.tailCost(2 * h + 1, tailA, 0, to);
+      if (straight < bestCost) {
+        best = h;
+        bestCost = straight;
+        bestCrossed = false;
+      }
+      if (crossed < bestCost) {
+        best = h;
+        bestCost = crossed;
+        bestCrossed = true;
+      }
+    }
+    this.relink(headA, headB, tailA, tailB, frames, best, bestCrossed, to);
+  }
+
+  /** Last spot of the track of `s` before a frame, or -1. */
+  private headBefore(s: number, frame: number): number {
+    const { table, before, after } = this;
+    let head = s;
+    while (head >= 0 && table.frame[head] >= frame) head = before[head];
+    if (head < 0) return NONE;
+    while (after[head] >= 0 && table.frame[after[head]] < frame) head = after[head];
+    return head;
+  }
+
+  private firstFrom(s: number, head: number): number {
+    if (head >= 0) return this.after[head];
+    let first = s;
+    while (this.before[first] >= 0) first = this.before[first];
+    return first;
+  }
+
+  /** Lists a track's spots by frame of the window, -1 where it has none; returns the first one behind. */
+  private collect(first: number, from: number, to: number, into: Int32Array): number {
+    into.fill(NONE, 0, to - from + 1);
+    let s = first;
+    for (; s >= 0 && this.table.frame[s] <= to; s = this.after[s]) into[this.table.frame[s] - from] = s;
+    return s;
+  }
+
+  private readHead(slot: number, head: number, from: number): 0 | 1 {
+    if (head < 0) return 0;
+    readTrack(this.forward, slot, this.table, this.before, head);
+    for (let f = this.table.frame[head] + 1; f < from; f++) {
+      this.forward.predict(slot);
+      this.forward.missed[slot]++;
+    }
+    return this.forward.missed[slot] > this.limits.mayVanishFrames ? 0 : 1;
+  }
+
+  /** One frame of all explanations; returns how many are kept. */
+  private step(k: number, kept: number): number {
+    const { forward, alive, spotA, spotB, candidate, candidateCost } = this;
+    const a = spotA[k];
+    const b = spotB[k];
+    let count = 0;
+    for (let h = 0; h < kept; h++) {
+      for (let i = 2 * h; i < 2 * h + 2; i++) if (alive[i]) forward.predict(i);
+      const A = 2 * h;
+      const B = A + 1;
+      const straight = this.takeCost(A, a) + this.takeCost(B, b);
+      candidateCost[count] = this.cost[h] + straight;
+      candidate[count++] = 16 * h + this.fresh(A, a, B, b);
+      if (a < 0 && b < 0) continue;
+      candidateCost[count] = this.cost[h] + this.takeCost(A, b) + this.takeCost(B, a);
+      candidate[count++] = 16 * h + CROSSED + this.fresh(A, b, B, a);
+      if ((a >= 0 && b >= 0) || !alive[A] || !alive[B]) continue;
+      const lone = a >= 0 ? a : b;
+      const ownerA = this.ownsMerged(A, B, lone);
+      const owner = ownerA ? A : B;
+      if (!this.mayTake(owner, lone)) continue;
+      candidateCost[count] = this.cost[h] + forward.mergedCost(owner, ownerA ? B : A, lone, this.spotSizePx);
+      candidate[count++] = 16 * h + MERGED + (ownerA === a >= 0 ? 0 : CROSSED);
+    }
+    const keep = Math.min(KEPT, count);
+    for (let n = 0; n < keep; n++) {
+      let least = n;
+      for (let m = n + 1; m < count; m++) if (candidateCost[m] < candidateCost[least]) least = m;
+      // The order of those passed over stays, so that the first of equals is kept.
+      const cost = candidateCost[least];
+      const chosen = candidate[least];
+      for (let m = least; m > n; m--) {
+        candidateCost[m] = candidateCost[m - 1];
+        candidate[m] = candidate[m - 1];
+      }
+      candidateCost[n] = cost;
+      candidate[n] = chosen;
+      this.apply(n, a, b);
+      this.nextCost[n] = cost;
+      this.history[k * KEPT + n] = chosen;
+    }
+    for (let i = 0; i < 2 * keep; i++) {
+      forward.copy(2 * KEPT + i, i);
+      alive[i] = alive[2 * KEPT + i];
+    }
+    const swap = this.cost;
+    this.cost = this.nextCost;
+    this.nextCost = swap;
+    return keep;
+  }
+
+  /** Makes the state of the n-th candidate, in the n-th place behind. */
+  private apply(n: number, a: number, b: number): void {
+    const { forward, alive } = this;
+    const h = this.candidate[n] >> 4;
+    const does = this.candidate[n] & 15;
+    for (let side = 0; side < 2; side++) {
+      const from = 2 * h + side;
+      const to = 2 * KEPT + 2 * n + side;
+      const spot = (side === 1) !== ((does & CROSSED) !== 0) ? b : a;
+      const fresh = (does & (side === 0 ? FRESH_A : FRESH_B)) !== 0;
+      if (alive[from]) forward.copy(from, to);
+      alive[to] = alive[from];
+      if (spot < 0) {
+        if (alive[to] && ++forward.missed[to] > this.limits.mayVanishFrames) alive[to] = 0;
+      } else if (fresh) {
+        forward.start(to, spot);
+        alive[to] = 1;
+      } else if ((does & MERGED) !== 0) {
+        forward.spot[to] = spot;
+        forward.missed[to] = 0;
+      } else {
+        forward.update(to, spot);
+      }
+    }
+  }
+
+  /** A merged spot goes to the nearer tracer, but not when the other one would be given up then. */
+  private ownsMerged(a: number, b: number, s: number): boolean {
+    const { forward, limits } = this;
+    const lateA = forward.missed[a] >= limits.mayVanishFrames;
+    const lateB = forward.missed[b] >= limits.mayVanishFrames;
+    if (lateA !== lateB) return lateA;
+    return forward.offSquared(a, s) <= forward.offSquared(b, s);
+  }
+
+  private mayTake(i: number, s: number): boolean {
+    const { table, forward, limits } = this;
+    const last = forward.spot[i];
+    const gap = table.frame[s] - table.frame[last];
+    const dx = table.xPx[s] - table.xPx[last];
+    const dy = table.yPx[s] - table.yPx[last];
+    const most = limits.longestStepPx * gap;
+    return gap <= limits.mayVanishFrames + 1 && dx * dx + dy * dy <= most * most;
+  }
+
+  /** Cost of tracer `i` taking spot `s`; at 0 and above a new tracer starts there instead. */
+  private takeCost(i: number, s: number): number {
+    if (s < 0 || !this.alive[i] || !this.mayTake(i, s)) return 0;
+    return Math.min(0, this.forward.cost(i, s));
+  }
+
+  private fresh(i: number, s: number, j: number, t: number): number {
+    return (
+      (s >= 0 && this.takeCost(i, s) >= 0 ? FRESH_A : 0) + (t >= 0 && this.takeCost(j, t) >= 0 ? FRESH_B : 0)
+    );
+  }
+
+  /** Cost of the piece behind spot `tail` (in slot `j`) continuing tracer `i`; 0 where it does not. */
+  private tailCost(i: number, tail: number, j: number, to: number): number {
+    const { forward, table } = this;
+    if (tail < 0 || !this.alive[i] || !this.mayTake(i, tail)) return 0;
+    const scratch = 4 * KEPT;
+    forward.copy(i, scratch);
+    for (let f = to + 1; f <= table.frame[tail]; f++) {
+      forward.predict(scratch);
+      if (f < table.frame[tail]) forward.missed[scratch]++;
+    }
+    return Math.min(0, forward.joinCost(scratch, this.backward, j));
+  }
+
+  /** Writes the links of the best explanation. */
+  private relink(
+    headA: number,
+    headB: number,
+    tailA: number,
+    tailB: number,
+    frames: number,
+    best: number,
+    crossed: boolean,
+    to: number,
+  ): void {
+    const { after, before, spotA, spotB } = this;
+    const endA = this.tailCost(2 * best, crossed ? tailB : tailA, crossed ? 1 : 0, to) < 0;
+    const endB = this.tailCost(2 * best + 1, crossed ? tailA : tailB, crossed ? 0 : 1, to) < 0;
+    const path = new Int32Array(frames);
+    for (let k = frames - 1, h = best; k >= 0; k--) {
+      path[k] = this.history[k * KEPT + h];
+      h = path[k] >> 4;
+    }
+    if (headA >= 0) after[headA] = NONE;
+    if (headB >= 0) after[headB] = NONE;
+    let lastA = headA;
+    let lastB = headB;
+    const link = (last: number, s: number, fresh: boolean): number => {
+      before[s] = fresh ? NONE : last;
+      if (!fresh && last >= 0) after[last] = s;
+      after[s] = NONE;
+      return s;
+    };
+    for (let k = 0; k < frames; k++) {
+      const does = path[k] & 15;
+      const swap = (does & CROSSED) !== 0;
+      const toA = swap ? spotB[k] : spotA[k];
+      const toB = swap ? spotA[k] : spotB[k];
+      if (toA >= 0) lastA = link(lastA, toA, (does & FRESH_A) !== 0);
+      if (toB >= 0) lastB = link(lastB, toB, (does & FRESH_B) !== 0);
+    }
+    const followA = crossed ? tailB : tailA;
+    const followB = crossed ? tailA : tailB;
+    if (followA >= 0) this.attach(lastA, followA, endA);
+    if (followB >= 0) this.attach(lastB, followB, endB);
+  }
+
+  private attach(last: number, tail: number, joined: boolean): void {
+    this.before[tail] = joined ? last : NONE;
+    if (joined) this.after[last] = tail;
+  }
+}
