@@ -1,5 +1,4 @@
 import { kernelsOfThisProcess } from '@/jobs/compute/kernels';
-import { kernelsOfThisProcess } from '@/jobs/compute/kernels';
 import { lineDensityTrials, summariseLineDensity } from '@/tracking/studies/line-density';
 import {
   goalsReached,
@@ -28,7 +27,7 @@ const STUDIES: Record<string, Study> = {
   *'standard-recording'() {
     for (const snr of [3, 4, 6]) {
       for (const seed of SEEDS) {
-        const figures = studyStandardRecording({ snr, seed }, {}, kernelsOfThisProcess());
+        const figures = studyStandardRecording({ snr, seed }, {}, kernels);
         yield snr === 4 ? { ...figures, kept: keepsPromises(figures) } : { ...figures };
       }
     }
@@ -40,7 +39,7 @@ const STUDIES: Record<string, Study> = {
         const about = { set, snr: snr ?? 'mixed' };
         const runs: MixedRun[] = [];
         for (const seed of MIXED_SEEDS) {
-          const run = studyMixedRecording({ set, seed, snr }, {}, kernelsOfThisProcess());
+          const run = studyMixedRecording({ set, seed, snr }, {}, kernels);
           const { gainCountsPerE, readNoiseE, spotSigmaPx, trueTracks, tracks } = run;
           const measured = { gainCountsPerE, readNoiseE, spotSigmaPx, trueTracks, tracks };
           runs.push(run);

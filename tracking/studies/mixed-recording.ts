@@ -10,7 +10,6 @@ import { scoreTracks, type TrackScores } from '../assess/track-scores';
 import { lookAtTruth } from '../assess/true-spots';
 import type { Kernels } from '../kernels/kernels';
 import { linkSpots } from '../link';
-import type { Kernels } from '../kernels/kernels';
 import { mixedCamera, mixedScene, type MixedOptions } from '../simulate/mixed-scene';
 import type { RecipeRequest } from '../types';
 import { noisyTruth } from './noisy-truth';

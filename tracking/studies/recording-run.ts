@@ -1,8 +1,6 @@
 import { createDetector } from '../detect';
 import type { Kernels } from '../kernels/kernels';
 import { plainKernels } from '../kernels/plain-kernels';
-import type { Kernels } from '../kernels/kernels';
-import { plainKernels } from '../kernels/plain-kernels';
 import { linkSpots } from '../link';
 import { measureImage, pickModelFrames } from '../measure-image';
 import { resolveRecipe } from '../recipe';

@@ -2,7 +2,6 @@ import { assessPoints, type PointAssessment } from '../assess';
 import { measuredTracks } from '../assess/measured-tracks';
 import { scoreTracks, type TrackScores } from '../assess/track-scores';
 import type { Kernels } from '../kernels/kernels';
-import type { Kernels } from '../kernels/kernels';
 import { standardCamera, standardScene, type StandardOptions } from '../simulate/standard-scene';
 import type { RecipeRequest } from '../types';
 import { runRecording } from './recording-run';
