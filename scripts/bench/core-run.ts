@@ -25,11 +25,12 @@ export async function runCore(
     for (let f = 0; f < frames; f++) await stack.readFrame(f, room);
   });
 
+  const numbers = pickModelFrames(frames, width * height);
   const picked: Frame[] = [];
-  for (const f of pickModelFrames(frames, width * height)) picked.push(await stack.readFrame(f));
+  for (const f of numbers) picked.push(await stack.readFrame(f));
   let model!: ImageModel;
   const measuring = await cpuSeconds(() => {
-    model = measureImage(picked, { effort });
+    model = measureImage(picked, { effort }, numbers);
   });
   const recipe = resolveRecipe({ effort }, { ...model, frames, pixelSizeM: PIXEL_SIZE_M });
   const search = await searchSeconds(kernels, model, recipe, picked);

@@ -1,4 +1,5 @@
 import { kernelsOfThisProcess } from '@/jobs/compute/kernels';
+import { keepsFalseRate, studyFalseSpots } from '@/tracking/studies/false-spots';
 import { lineDensityTrials, summariseLineDensity } from '@/tracking/studies/line-density';
 import {
   goalsReached,
@@ -18,6 +19,8 @@ const kernels = kernelsOfThisProcess();
 const SEEDS = [1, 2, 3];
 /** Settings are tried out on other seeds. */
 const MIXED_SEEDS = [1, 2, 3, 4, 5];
+/** So many make a rate known to 6 %. */
+const FALSE_SPOTS_LEAST = 300;
 const TANGLE_SEEDS = Array.from({ length: 12 }, (_, i) => i + 1);
 /** Line densities from a slow counterflow to a dense tangle, m^-2. */
 const LINE_DENSITIES = [1e7, 3e7, 1e8];
@@ -48,6 +51,14 @@ const STUDIES: Record<string, Study> = {
         const figures = mixedFigures(runs);
         yield { ...about, seeds: 'pooled', ...figures, reached: goalsReached(figures, snr) };
         yield { ...about, seeds: 'worst', worst: worstRuns(runs, snr) };
+      }
+    }
+  },
+  /** Spots found where there are none, for several kinds of noise and wanted rates. */
+  *'false-spots'() {
+    for (const effort of ['full', 'quick'] as const) {
+      for (const row of studyFalseSpots({ spotsLeast: FALSE_SPOTS_LEAST, seed: 1, effort })) {
+        yield { effort, ...row, kept: keepsFalseRate(row) };
       }
     }
   },

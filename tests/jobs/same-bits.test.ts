@@ -19,6 +19,7 @@ import { bundle } from '../helpers/worker-process';
 
 const MINUTES = 60_000;
 const SIZE = { widthPx: 96, heightPx: 80, frames: 48 };
+const IMAGE = { frames: SIZE.frames, width: SIZE.widthPx, height: SIZE.heightPx };
 const PIXEL_SIZE_M = CONDITIONS.pixelSize_m;
 
 let folder: string;
@@ -47,25 +48,29 @@ function poolOf(workers: number): ComputePool {
   return pool;
 }
 
-async function inThisProcess(): Promise<typeof expected> {
+/** All frames, a detector of their own, and the recipe it works by. */
+async function prepare() {
   const stack = await openStack(stackDir);
   const { width, height, frames } = stack;
   const all: Frame[] = [];
   for (let f = 0; f < frames; f++) all.push(await stack.readFrame(f));
   await stack.close();
+  const picked = pickModelFrames(frames, width * height);
   const model = measureImage(
-    pickModelFrames(frames, width * height).map((f) => all[f]),
+    picked.map((f) => all[f]),
     {},
+    picked,
   );
   const recipe = resolveRecipe({}, { ...model, frames, pixelSizeM: PIXEL_SIZE_M });
-  const detector = createDetector(model, recipe, kernelsOfThisProcess());
+  return { all, recipe, detector: createDetector(model, recipe, kernelsOfThisProcess()) };
+}
+
+async function inThisProcess(): Promise<typeof expected> {
+  const { all, recipe, detector } = await prepare();
   const sink = createSpotSink();
   all.forEach((frame, f) => detector.detect(frame, f, sink));
   const spots = sink.spots();
-  return {
-    spots: Buffer.from(encodeSpots(spots)),
-    tracks: linkSpots(spots, { frames, width, height }, recipe),
-  };
+  return { spots: Buffer.from(encodeSpots(spots)), tracks: linkSpots(spots, IMAGE, recipe) };
 }
 
 test.each([1, 2, 4])(
@@ -77,7 +82,6 @@ test.each([1, 2, 4])(
       request: {},
       pixelSizeM: PIXEL_SIZE_M,
     });
-    const image = { frames: SIZE.frames, width: SIZE.widthPx, height: SIZE.heightPx };
     for (const chunkFrames of [1, 5, 7, SIZE.frames]) {
       const parts = await Promise.all(
         chunksOf(SIZE.frames, chunkFrames).map(({ firstFrame, frames }) =>
@@ -87,7 +91,11 @@ test.each([1, 2, 4])(
       const spots = concatSpots(parts.map((part) => decodeSpots(new Uint8Array(part.spots))));
       expect(spots.count).toBeGreaterThan(SIZE.frames * 5);
       expect(Buffer.from(encodeSpots(spots)).equals(expected.spots), `chunks of ${chunkFrames}`).toBe(true);
-      const tracks = await pool.run('linkTracks', { chunks: parts.map((part) => part.spots), image, recipe });
+      const tracks = await pool.run('linkTracks', {
+        chunks: parts.map((part) => part.spots),
+        image: IMAGE,
+        recipe,
+      });
       expect(tracks).toEqual(expected.tracks);
     }
   },
@@ -95,19 +103,9 @@ test.each([1, 2, 4])(
 );
 
 test('the detector finds the same bits in a frame whatever frames it saw before', async () => {
-  const stack = await openStack(stackDir);
-  const { width, height, frames } = stack;
-  const all: Frame[] = [];
-  for (let f = 0; f < frames; f++) all.push(await stack.readFrame(f));
-  await stack.close();
-  const model = measureImage(
-    pickModelFrames(frames, width * height).map((f) => all[f]),
-    {},
-  );
-  const recipe = resolveRecipe({}, { ...model, frames, pixelSizeM: PIXEL_SIZE_M });
-  const detector = createDetector(model, recipe, kernelsOfThisProcess());
-  const parts = Array.from({ length: frames }, () => createSpotSink());
-  for (let f = frames - 1; f >= 0; f--) detector.detect(all[f], f, parts[f]);
+  const { all, detector } = await prepare();
+  const parts = all.map(() => createSpotSink());
+  for (let f = all.length - 1; f >= 0; f--) detector.detect(all[f], f, parts[f]);
   const backwards = encodeSpots(concatSpots(parts.map((sink) => sink.spots())));
   expect(Buffer.from(backwards).equals(expected.spots)).toBe(true);
 });
