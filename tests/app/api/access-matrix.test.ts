@@ -5,6 +5,7 @@ import { ACTIONS, grantFor, ROLES, type Role } from '@/lib/access';
 import { newId } from '@/lib/ids';
 import { problemSchema } from '@/lib/views/common';
 import { models } from '@/models';
+import { addMail } from '@/models/queries/mails';
 import { closeSessionLocks } from '@/models/session-locks';
 import { call, routeModule, routePaths, webSettings } from '../../helpers/call-route';
 import { freshDatabase, type FreshDatabase } from '../../helpers/fresh-database';
@@ -77,7 +78,22 @@ async function makeThings(): Promise<Things> {
     bytes: '10',
     state: 'arriving',
   });
+  const mail = await database.sequelize.transaction((transaction) =>
+    addMail(
+      { labId: own.labId, userId: maker.userId, order: { kind: 'password-changed' }, personal: false },
+      transaction,
+    ),
+  );
+  const job = await models().JobRun.create({
+    id: newId(),
+    labId: own.labId,
+    kind: 'send-mail',
+    subjectId: mail,
+    state: 'failed',
+  });
   return {
+    mailId: mail,
+    jobId: job.id,
     campaignId: campaign.id,
     runId: run.id,
     recordingId: recording.id,

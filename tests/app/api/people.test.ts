@@ -1,6 +1,7 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { acceptInvitation } from '@/app/invitation/[token]/actions';
 import { INVITATION_MS } from '@/auth/invitations';
+import { closeDoorbell } from '@/jobs/doorbell';
 import type { ProblemView } from '@/lib/views/common';
 import type { InvitationView, InvitedMemberView, MemberView } from '@/lib/views/lab-view';
 import { models } from '@/models';
@@ -22,6 +23,7 @@ beforeAll(async () => {
   other = await makeTestLab(database.url, 'Second laboratory');
 });
 afterAll(({}, suite) => database.dropIfGreen({}, suite));
+afterAll(closeDoorbell);
 
 const admin = () => lab.people.lab_administrator;
 let count = 0;
