@@ -17,6 +17,7 @@ const JUMP_PX = 8;
 const BINS = 20;
 /** A histogram that is flat fails once in 10,000 times; seeds are fixed. */
 const CHANCE_LEAST = 1e-4;
+const MINUTES = 60_000;
 
 /** Lone spots at places of a grid, each anywhere within a square of whole pixels, anew in every frame. */
 function jumpingSpots(seed: number) {
@@ -72,6 +73,7 @@ test.each([0.8, 1.2, 2])(
       expect(unbiasedness(truth, error), `${axis} of ${spotSigmaPx} px`).toBeGreaterThan(CHANCE_LEAST);
     }
   },
+  2 * MINUTES,
 );
 
 test('the histogram would show positions drawn to the middle of pixels by 0.03 px', () => {
