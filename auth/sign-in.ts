@@ -18,14 +18,14 @@ export type SignInResult = { ok: true; person: SignedIn } | { ok: false; waitS: 
 export async function signInWith(email: string, password: string, address: string): Promise<SignInResult> {
   const attempt = { email: email.trim(), address };
   const { waitS, delayMs } = await countSignIn(attempt);
-  if (waitS !== null) {
-    await noteFailure(null, 'too-many', address);
-    return { ok: false, waitS };
-  }
   const user = await selectRow<{ id: string; password_hash: string | null; session_version: number }>(
     `SELECT id, password_hash, session_version FROM users WHERE lower(email) = lower($1) AND disabled_at IS NULL`,
     [attempt.email],
   );
+  if (waitS !== null) {
+    await noteFailure(user?.id ?? null, 'too-many', address);
+    return { ok: false, waitS };
+  }
   const [fits] = await Promise.all([passwordFits(user?.password_hash ?? null, password), pause(delayMs)]);
   if (!user || !fits) {
     await noteFailure(user?.id ?? null, 'refused', address);

@@ -4,7 +4,10 @@ import { useQuery } from '@tanstack/react-query';
 import { Answer } from '@/components/data/answer';
 import { api } from '@/components/data/api-client';
 import { useList } from '@/components/lists/use-list';
+import { SearchField } from '@/components/lists/search-field';
+import { buttonClasses } from '@/components/ui/button';
 import { SelectField } from '@/components/ui/choice';
+import { Field } from '@/components/ui/field';
 import { Moment } from '@/components/ui/moment';
 import { EmptyState } from '@/components/ui/page-states';
 import { Pager } from '@/components/ui/pager';
@@ -18,7 +21,7 @@ import type { AuditView, MemberView } from '@/lib/views/lab-view';
 const SHAPE: ListShape = {
   sorts: ['createdAt'],
   defaultSort: '-createdAt',
-  filters: ['action', 'person'],
+  filters: ['action', 'person', 'q', 'from', 'to'],
 };
 
 /** Who did what in the laboratory, newest first. */
@@ -32,7 +35,12 @@ export function AuditTable({ ofEverybody }: { ofEverybody: boolean }) {
   const persons = (people.data?.items ?? []).map(({ person }) => ({ value: person.id, label: person.name }));
   return (
     <>
-      <div className="flex flex-wrap gap-3 pb-2">
+      <div className="flex flex-wrap items-end gap-3 pb-2">
+        <SearchField
+          label="Search the audit trail"
+          value={list.state.filters.q ?? ''}
+          onSearch={(q) => list.filter('q', q)}
+        />
         <SelectField
           label="What was done"
           options={AUDIT_KINDS}
@@ -47,6 +55,25 @@ export function AuditTable({ ofEverybody }: { ofEverybody: boolean }) {
             onChange={(event) => list.filter('person', event.target.value)}
           />
         ) : null}
+        <Field
+          label="From"
+          type="date"
+          value={list.state.filters.from ?? ''}
+          onChange={(event) => list.filter('from', event.target.value)}
+        />
+        <Field
+          label="To"
+          type="date"
+          value={list.state.filters.to ?? ''}
+          onChange={(event) => list.filter('to', event.target.value)}
+        />
+        <a
+          className={buttonClasses('outlined', 'hand:ml-auto')}
+          href={`/api/v1/audit.csv?${new URLSearchParams(list.state.filters)}`}
+          download
+        >
+          Export CSV
+        </a>
       </div>
       <Answer query={list.query} what="the audit trail">
         {({ items }) =>
@@ -75,6 +102,7 @@ export function AuditTable({ ofEverybody }: { ofEverybody: boolean }) {
                         <strong className="[overflow-wrap:anywhere]"> {entry.subject.name}</strong>
                       ) : null}
                       <RolesThen detail={entry.detail} />
+                      <FromWhere entry={entry} />
                     </Cell>
                   </Row>
                 ))}
@@ -88,7 +116,9 @@ export function AuditTable({ ofEverybody }: { ofEverybody: boolean }) {
   );
 }
 
-const whoOf = ({ person }: AuditView) => person?.name ?? 'nobody signed in';
+// The product's own doings are no person's.
+const whoOf = ({ person, action }: AuditView) =>
+  person?.name ?? (action.startsWith('files.') ? 'the nightly check' : 'nobody signed in');
 
 /** Roles that an act gave, and those before it. */
 function RolesThen({ detail }: { detail: Record<string, unknown> }) {
@@ -99,6 +129,18 @@ function RolesThen({ detail }: { detail: Record<string, unknown> }) {
       ? rolesText(roles)
       : null;
   return text ? <span className="block text-small text-ink-3">{text}</span> : null;
+}
+
+/** Where a failed sign-in came from. */
+function FromWhere({ entry: { action, detail } }: { entry: AuditView }) {
+  if (action !== 'sign-in.failed' || typeof detail.address !== 'string') return null;
+  const why = detail.why === 'too-many' ? ', after too many tries' : '';
+  return (
+    <span className="block text-small text-ink-3">
+      from {detail.address}
+      {why}
+    </span>
+  );
 }
 
 const rolesText = (roles: unknown): string =>

@@ -4,7 +4,7 @@ import { useRef, type ComponentProps } from 'react';
 import { Button } from '@/components/ui/button';
 import { readInput, type Dropped } from './dropped-files';
 
-const STACK_TYPES = '.tif,.tiff,.btf,.tf8,.ome.tif,.png,.zip,.npy';
+const STACK_TYPES = '.tif,.tiff,.btf,.tf8,.ome.tif,.png,.zip,.npy,.h5,.hdf5,.nxs';
 
 type ChooseButtonProps = Omit<ComponentProps<typeof Button>, 'onClick'> & {
   folder?: boolean;

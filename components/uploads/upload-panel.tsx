@@ -63,7 +63,7 @@ export function UploadPanel({ runId }: { runId: string }) {
           <circle cx="17" cy="6" r="4.5" className="fill-paper stroke-line-strong" strokeWidth="1.5" />
         </svg>
         <p className="text-ink-2 max-hand:hidden">
-          Drop TIFF stacks, a ZIP, an NPY file or a folder of frames here. Several at once are fine.
+          Drop TIFF stacks, a ZIP, an NPY or HDF5 file or a folder of frames here. Several at once are fine.
         </p>
         <span className="flex gap-2 hand:ml-auto">
           <ChooseButton kind={items.length === 0 ? 'main' : 'outlined'} multiple onChosen={take}>

@@ -6,10 +6,12 @@ import type { campaignListQuery } from '@/lib/schemas/list-query';
 import type { CampaignView } from '@/lib/views/campaign-view';
 import type { ListView } from '@/lib/views/common';
 import { models } from '..';
+import { getSequelize } from '../database';
 import { changeRow, type Change } from './change-row';
 import { containing, listPage, type ListSource } from './list-page';
 import { iso, itemOf, personJson, type ItemRow, type Made } from './person';
 import { selectRow } from './select';
+import { writeAudit } from './write-audit';
 
 interface Row extends ItemRow, Made {
   name: string;
@@ -87,15 +89,15 @@ export async function createCampaign(
   input: CampaignCreate,
 ): Promise<CampaignView> {
   const { name, description = null, tags = [] } = input;
-  const row = await models().Campaign.create({
-    id: newId(),
-    labId: maker.labId,
-    name,
-    description,
-    tags,
-    createdBy: maker.userId,
+  const { labId, userId } = maker;
+  const id = newId();
+  await getSequelize().transaction(async (transaction) => {
+    const values = { id, labId, name, description, tags, createdBy: userId };
+    await models().Campaign.create(values, { transaction });
+    const entry = { action: 'campaign.made', subjectKind: 'campaign', subjectId: id };
+    await writeAudit({ labId, userId, ...entry }, transaction);
   });
-  return getCampaign(maker.labId, row.id);
+  return getCampaign(labId, id);
 }
 
 export async function patchCampaign(change: Change, input: CampaignPatch): Promise<CampaignView> {

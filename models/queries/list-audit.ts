@@ -38,10 +38,14 @@ const FROM = 'audit_entries a LEFT JOIN users u ON u.id = a.user_id';
 const SELECT = `a.id, a.action, a.subject_kind, a.subject_id, ${SUBJECT_NAME} AS subject_name, a.detail,
   a.created_at, ${personJson('u')} AS person`;
 
+/** Belongs to no laboratory, but is told to each that the person is a member of. */
+const FAILED_SIGN_IN = `(a.lab_id IS NULL AND a.action = 'sign-in.failed'
+  AND EXISTS (SELECT 1 FROM memberships m WHERE m.lab_id = $1 AND m.user_id = a.user_id))`;
+
 /** @param ownerId only what this person did; null for everybody's */
 function chosen(labId: string, ownerId: string | null, filters: AuditFilters) {
   const bind: unknown[] = [labId];
-  const where = ['a.lab_id = $1'];
+  const where = [`(a.lab_id = $1 OR ${FAILED_SIGN_IN})`];
   if (ownerId) where.push(`a.user_id = $${bind.push(ownerId)}`);
   if (filters.person) where.push(`a.user_id = $${bind.push(filters.person)}`);
   if (filters.action) {

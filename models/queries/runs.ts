@@ -10,6 +10,7 @@ import type { RunView } from '@/lib/views/run-view';
 import { deriveRun } from '@/tracking/flow/derive-run';
 import type { RunConditions } from '@/tracking/flow/run-conditions';
 import { models } from '..';
+import { getSequelize } from '../database';
 import type { Run } from '../run';
 import { changeRow, type Change } from './change-row';
 import { containing, listPage, type ListSource } from './list-page';
@@ -17,6 +18,7 @@ import { iso, itemOf, personJson, type ItemRow, type Made } from './person';
 import { CONDITION_COLUMNS, conditionColumns, conditionsOf, type ConditionRow } from './run-columns';
 import { HEADLINE, headlineOf, type HeadlineRow } from './run-headline';
 import { selectRow } from './select';
+import { writeAudit } from './write-audit';
 
 interface Row extends ItemRow, Made, ConditionRow {
   campaign_id: string;
@@ -112,19 +114,22 @@ export async function createRun(
   const values = Object.fromEntries(
     Object.entries(columns).map(([column, value]) => [camel(column), value ?? null]),
   );
-  const row = await models().Run.create({
+  const { labId, userId } = maker;
+  const id = newId();
+  const run = {
     ...(values as Partial<Run>),
-    id: newId(),
-    labId: maker.labId,
-    campaignId,
-    name: input.name,
+    ...{ id, labId, campaignId, name: input.name, createdBy: userId },
     startedAt: input.startedAt ? new Date(input.startedAt) : null,
     tags: input.tags ?? [],
     notes: input.notes ?? null,
     gravityDirection: input.gravityDirection ?? [0, 1],
-    createdBy: maker.userId,
+  };
+  await getSequelize().transaction(async (transaction) => {
+    await models().Run.create(run, { transaction });
+    const entry = { action: 'run.made', subjectKind: 'run', subjectId: id };
+    await writeAudit({ labId, userId, ...entry }, transaction);
   });
-  return getRun(maker.labId, row.id);
+  return getRun(labId, id);
 }
 
 /** @throws StaleRevisionError, LabError SUSPICIOUS */

@@ -1,4 +1,5 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { signInWith } from '@/auth/sign-in';
 import { ROLES } from '@/lib/access';
 import { AUDIT_WORDS } from '@/lib/audit-words';
 import type { ListView, ProblemView } from '@/lib/views/common';
@@ -20,6 +21,7 @@ beforeAll(async () => {
   const { experimentalist, lab_administrator: admin, analyst } = lab.people;
   const campaign = await post<{ id: string }>('/campaigns', experimentalist, { name: 'Quiet pipe' });
   campaignId = campaign.id;
+  await post(`/campaigns/${campaignId}/runs`, experimentalist, { name: 'Slow' });
   await call('DELETE', `/api/v1/campaigns/${campaignId}`, { token: experimentalist.token });
   await call('POST', `/api/v1/campaigns/${campaignId}/restore`, { token: experimentalist.token });
   await post('/tokens', analyst, { name: 'Notebook' });
@@ -55,6 +57,8 @@ describe('the audit trail', () => {
         ['token.made', lab.people.analyst.name, 'Notebook'],
         ['campaign.restored', lab.people.experimentalist.name, 'Quiet pipe'],
         ['campaign.removed', lab.people.experimentalist.name, 'Quiet pipe'],
+        ['run.made', lab.people.experimentalist.name, 'Slow'],
+        ['campaign.made', lab.people.experimentalist.name, 'Quiet pipe'],
       ]);
       expect(items[1].detail).toEqual({ name: 'Ada Reed', before: ['annotator'], after: ['analyst'] });
     }
@@ -64,7 +68,12 @@ describe('the audit trail', () => {
     const { experimentalist, analyst, annotator } = lab.people;
     const actions = async (person: LabPerson, query = '') =>
       (await read(person, query)).items.map(({ action }) => action);
-    expect(await actions(experimentalist)).toEqual(['campaign.restored', 'campaign.removed']);
+    expect(await actions(experimentalist)).toEqual([
+      'campaign.restored',
+      'campaign.removed',
+      'run.made',
+      'campaign.made',
+    ]);
     expect(await actions(analyst)).toEqual(['token.made']);
     expect(await actions(annotator)).toEqual([]);
     expect(await actions(annotator, `?person=${experimentalist.userId}`)).toEqual([]);
@@ -84,6 +93,8 @@ describe('the audit trail', () => {
     expect(await actions(`?person=${experimentalist.userId}`)).toEqual([
       'campaign.restored',
       'campaign.removed',
+      'run.made',
+      'campaign.made',
     ]);
     expect(await actions('?action=member')).toEqual([
       'member.removed',
@@ -93,6 +104,25 @@ describe('the audit trail', () => {
     expect(await actions('?action=member.invited')).toEqual(['member.invited']);
     expect(await actions(`?action=campaign&person=${admin.userId}`)).toEqual([]);
     expect(await actions('?action=mem')).toEqual([]);
+  });
+
+  it('tells of failed sign-ins of members, to those who see all, with where they came from', async () => {
+    const { annotator, lab_administrator: admin, analyst } = lab.people;
+    await signInWith(annotator.email, 'not the password', '192.0.2.77');
+    await signInWith('nobody@lab.test', 'not the password', '192.0.2.78');
+    const { items } = await read(admin, '?action=sign-in');
+    expect(items.map(({ action, person, detail }) => [action, person?.name, detail])).toEqual([
+      ['sign-in.failed', annotator.name, { why: 'refused', address: '192.0.2.77' }],
+    ]);
+    expect((await read(analyst, '?action=sign-in')).items).toEqual([]);
+    expect((await read(other.people.lab_administrator, '?action=sign-in')).items).toEqual([]);
+  });
+
+  it('tells of tries beyond the limit too, so that guessing shows', async () => {
+    const { annotator, lab_administrator: admin } = lab.people;
+    for (let i = 0; i < 6; i++) await signInWith(annotator.email, 'guess', `192.0.2.${100 + i}`);
+    const { items } = await read(admin, '?action=sign-in.failed');
+    expect(items.map(({ detail }) => detail.why)).toContain('too-many');
   });
 
   it('is read page by page, each entry once', async () => {
