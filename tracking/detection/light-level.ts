@@ -2,6 +2,8 @@ import { nthElement } from '../image-model/nth-element';
 
 /** About so many pixels are looked at, evenly spread. */
 const SAMPLES = 20_000;
+/** About so many of those tell where the rounds start, which need not be exact. */
+const START_SAMPLES = 1000;
 const CLIP_SIGMAS = 2.5;
 const ROUNDS = 5;
 /** Below this mean background its brightness can't be told, only its offset. */
@@ -77,12 +79,10 @@ const sumRoom: LightSums = (scale, shift, readVariance, clip) => {
 
 /** Light level of samples; `sums` goes over them. */
 export function levelOfSamples(samples: LightSamples, readVariance: number, sums: LightSums): LightLevel {
-  const { count, background } = samples;
-  if (count === 0) return { scale: 1, shift: 0 };
-  let mean = 0;
-  for (let k = 0; k < count; k++) mean += background[k];
-  const scaling = mean / count > BACKGROUND_LEAST_E;
-  let scale = scaling ? Math.max(0.01, medianRatio(samples)) : 1;
+  if (samples.count === 0) return { scale: 1, shift: 0 };
+  const start = startOf(samples);
+  const scaling = start.meanBackground > BACKGROUND_LEAST_E;
+  let scale = scaling ? Math.max(0.01, start.medianRatio) : 1;
   let shift = 0;
   for (let round = 0; round < ROUNDS; round++) {
     const { light, expected, kept } = sums(scale, shift, readVariance, CLIP_SIGMAS * CLIP_SIGMAS);
@@ -95,12 +95,17 @@ export function levelOfSamples(samples: LightSamples, readVariance: number, sums
   return { scale, shift };
 }
 
-/** Median of electrons over background, from every seventh sample. */
-function medianRatio({ count, electrons, background }: LightSamples): number {
-  if (ratios.length < count / 7 + 1) ratios = new Float64Array(Math.ceil(count / 7) + 1);
+/** Mean background, and median of electrons over background, of some of the samples. */
+function startOf({ count, electrons, background }: LightSamples) {
+  const step = Math.max(1, Math.floor(count / START_SAMPLES));
+  const looked = Math.ceil(count / step);
+  if (ratios.length < looked) ratios = new Float64Array(looked);
+  let sum = 0;
   let found = 0;
-  for (let k = 0; k < count; k += 7) {
+  for (let k = 0; k < count; k += step) {
+    sum += background[k];
     if (background[k] > 0) ratios[found++] = electrons[k] / background[k];
   }
-  return found === 0 ? 1 : nthElement(ratios, found, found >> 1);
+  const medianRatio = found === 0 ? 1 : nthElement(ratios, found, found >> 1);
+  return { meanBackground: sum / looked, medianRatio };
 }
