@@ -3,6 +3,7 @@ import type { BrightnessStatistics } from './brightness-statistics';
 import { createEdges } from './edges';
 import type { LinkLimits } from './link-pass';
 import type { MotionStatistics } from './motion-statistics';
+import { PairFilter } from './pair-filter';
 import { readTrack } from './read-track';
 import type { SpotTable } from './spot-table';
 import { TracerFilter } from './tracer-filter';
@@ -23,7 +24,7 @@ export function joinPieces(
 ): void {
   const ends = spotsWithout(after);
   const starts = spotsWithout(before);
-  const forward = new TracerFilter(motion, brightness, table, 1, 2);
+  const forward = new PairFilter(motion, brightness, table, 1, 2);
   const backward = new TracerFilter(motion, brightness, table, -1, 1);
   const edges = createEdges();
   edges.clear(starts.length);

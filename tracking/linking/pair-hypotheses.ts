@@ -1,12 +1,15 @@
 import type { BrightnessStatistics } from './brightness-statistics';
 import type { LinkLimits } from './link-pass';
 import type { MotionStatistics } from './motion-statistics';
+import { PairFilter } from './pair-filter';
 import { readTrack } from './read-track';
 import type { SpotTable } from './spot-table';
 import { TracerFilter } from './tracer-filter';
 
 /** Explanations kept from frame to frame. */
 const KEPT = 16;
+/** Variance of where a tracer is in a spot that it shares with another one, spot sizes squared. */
+const MERGED_VARIANCE = 0.4;
 const NONE = -1;
 /** Bits of what an explanation does in a frame. */
 const CROSSED = 1;
@@ -20,7 +23,7 @@ const FRESH_B = 8;
  * piece that follows continues one of the two.
  */
 export class PairHypotheses {
-  private readonly forward: TracerFilter;
+  private readonly forward: PairFilter;
   private readonly backward: TracerFilter;
   /** Slots 2 h and 2 h + 1 hold tracers A and B of explanation h; those of the next frame lie behind. */
   private readonly alive = new Uint8Array(4 * KEPT + 2);
@@ -41,7 +44,7 @@ export class PairHypotheses {
     brightness: BrightnessStatistics,
     private readonly spotSizePx: number,
   ) {
-    this.forward = new TracerFilter(motion, brightness, table, 1, 4 * KEPT + 2);
+    this.forward = new PairFilter(motion, brightness, table, 1, 4 * KEPT + 2);
     this.backward = new TracerFilter(motion, brightness, table, -1, 2);
   }
 
@@ -71,7 +74,7 @@ export class PairHypotheses {
     this.alive[1] = this.readHead(1, headB, from);
     this.cost[0] = 0;
     let kept = 1;
-    for (let k = 0; k < frames; k++) kept = this.step(k, kept);
+    for (let k = 0; k < frames; k++) kept = this.step(k, kept, from + k);
     if (tailA >= 0) readTrack(this.backward, 0, this.table, this.after, tailA);
     if (tailB >= 0) readTrack(this.backward, 1, this.table, this.after, tailB);
     let best = 0;
@@ -132,7 +135,7 @@ export class PairHypotheses {
   }
 
   /** One frame of all explanations; returns how many are kept. */
-  private step(k: number, kept: number): number {
+  private step(k: number, kept: number, frame: number): number {
     const { forward, alive, spotA, spotB, candidate, candidateCost } = this;
     const a = spotA[k];
     const b = spotB[k];
@@ -168,7 +171,7 @@ export class PairHypotheses {
       }
       candidateCost[n] = cost;
       candidate[n] = chosen;
-      this.apply(n, a, b);
+      this.apply(n, a, b, frame);
       this.nextCost[n] = cost;
       this.history[k * KEPT + n] = chosen;
     }
@@ -183,36 +186,50 @@ export class PairHypotheses {
   }
 
   /** Makes the state of the n-th candidate, in the n-th place behind. */
-  private apply(n: number, a: number, b: number): void {
+  private apply(n: number, a: number, b: number, frame: number): void {
     const { forward, alive } = this;
     const h = this.candidate[n] >> 4;
     const does = this.candidate[n] & 15;
+    const first = 2 * KEPT + 2 * n;
     for (let side = 0; side < 2; side++) {
       const from = 2 * h + side;
-      const to = 2 * KEPT + 2 * n + side;
+      if (this.alive[from]) forward.copy(from, first + side);
+      alive[first + side] = alive[from];
+    }
+    if ((does & MERGED) !== 0) {
+      const lone = a >= 0 ? a : b;
+      const owner = a >= 0 === ((does & CROSSED) === 0) ? first : first + 1;
+      forward.updateMerged(first, first + 1, lone, this.spotSizePx);
+      forward.spot[owner] = lone;
+      this.endIfLost(first === owner ? first + 1 : first, frame);
+      return;
+    }
+    for (let side = 0; side < 2; side++) {
+      const to = first + side;
       const spot = (side === 1) !== ((does & CROSSED) !== 0) ? b : a;
-      const fresh = (does & (side === 0 ? FRESH_A : FRESH_B)) !== 0;
-      if (alive[from]) forward.copy(from, to);
-      alive[to] = alive[from];
       if (spot < 0) {
-        if (alive[to] && ++forward.missed[to] > this.limits.mayVanishFrames) alive[to] = 0;
-      } else if (fresh) {
+        forward.missed[to]++;
+        this.endIfLost(to, frame);
+      } else if ((does & (side === 0 ? FRESH_A : FRESH_B)) !== 0) {
         forward.start(to, spot);
         alive[to] = 1;
-      } else if ((does & MERGED) !== 0) {
-        forward.spot[to] = spot;
-        forward.missed[to] = 0;
       } else {
         forward.update(to, spot);
       }
     }
   }
 
-  /** A merged spot goes to the nearer tracer, but not when the other one would be given up then. */
+  private endIfLost(i: number, frame: number): void {
+    const since = frame - this.table.frame[this.forward.spot[i]];
+    if (this.alive[i] && since > this.limits.mayVanishFrames) this.alive[i] = 0;
+  }
+
+  /** A merged spot goes to the nearer tracer, but not when the other one would be given up soon. */
   private ownsMerged(a: number, b: number, s: number): boolean {
-    const { forward, limits } = this;
-    const lateA = forward.missed[a] >= limits.mayVanishFrames;
-    const lateB = forward.missed[b] >= limits.mayVanishFrames;
+    const { forward, table } = this;
+    const soon = Math.max(1, this.limits.mayVanishFrames - 1);
+    const lateA = table.frame[s] - table.frame[forward.spot[a]] > soon;
+    const lateB = table.frame[s] - table.frame[forward.spot[b]] > soon;
     if (lateA !== lateB) return lateA;
     return forward.offSquared(a, s) <= forward.offSquared(b, s);
   }
@@ -286,6 +303,9 @@ export class PairHypotheses {
       const swap = (does & CROSSED) !== 0;
       const toA = swap ? spotB[k] : spotA[k];
       const toB = swap ? spotA[k] : spotB[k];
+      const merged = (does & MERGED) !== 0 ? this.spotSizePx * this.spotSizePx * MERGED_VARIANCE : 0;
+      if (toA >= 0) this.table.merged[toA] = merged;
+      if (toB >= 0) this.table.merged[toB] = merged;
       if (toA >= 0) lastA = link(lastA, toA, (does & FRESH_A) !== 0);
       if (toB >= 0) lastB = link(lastB, toB, (does & FRESH_B) !== 0);
     }

@@ -9,6 +9,8 @@ export interface SpotTable {
   yPx: Float32Array;
   /** Mean of the two position variances, px^2; never 0, so that every covariance can be inverted. */
   variance: Float32Array;
+  /** Variance to be added where the spot was found to be two tracers in one, px^2; else 0. */
+  merged: Float32Array;
   /** Ln brightness and its variance; -2 ln of its density among all tracers, without the 2 pi. */
   ln: Float32Array;
   lnVariance: Float32Array;
@@ -22,7 +24,8 @@ export function createSpotTable(spots: Spots, brightness: BrightnessStatistics):
   const { count, frame, xPx, yPx, sxPx, syPx } = spots;
   const variance = new Float32Array(count);
   for (let s = 0; s < count; s++) variance[s] = 0.5 * (sxPx[s] * sxPx[s] + syPx[s] * syPx[s]) + 1e-6;
-  const table = { count, frame, xPx, yPx, variance, ln: NONE, lnVariance: NONE, lnCommon: NONE };
+  const merged = new Float32Array(count);
+  const table = { count, frame, xPx, yPx, variance, merged, ln: NONE, lnVariance: NONE, lnCommon: NONE };
   if (brightness.variance === 0) return table;
   const ln = new Float32Array(count);
   const lnVariance = new Float32Array(count);
