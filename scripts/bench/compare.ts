@@ -16,8 +16,8 @@ export interface Comparison {
   quick: PipelineRun;
   /** Full effort by the kernels that need no SIMD; null where nothing else runs anyway. */
   plainKernels: PipelineRun | null;
-  /** The first pass at full effort, before the compilers knew what to do. */
-  cold: PipelineRun;
+  /** The first pass of the process, before the compilers knew what to do; null where it had run before. */
+  cold: PipelineRun | null;
 }
 
 interface CompareOptions {
@@ -25,26 +25,28 @@ interface CompareOptions {
   python: string | null;
   folder: string;
   rounds: number;
+  /** True where this process has not computed anything yet. */
+  fresh: boolean;
   note(text: string): void;
 }
 
 /** Lets the pipelines take turns, so that a disturbance of the machine meets all of them. The first round warms up and isn't counted. */
 export async function comparePipelines(
   recording: BenchRecording,
-  { stack, python, folder, rounds, note }: CompareOptions,
+  { stack, python, folder, rounds, fresh, note }: CompareOptions,
 ): Promise<Comparison> {
   const kernels = chooseKernels();
   const both = kernels.name !== plainKernels.name;
   const runs = new Map<string, PipelineRun[]>();
   const keep = (key: string, run: PipelineRun) => runs.set(key, [...(runs.get(key) ?? []), run]);
-  let cold!: PipelineRun;
+  let cold: PipelineRun | null = null;
   for (let round = 0; round <= rounds; round++) {
     note(round === 0 ? `Warming up on the ${recording.name} set` : `Round ${round} of ${rounds}`);
     const full = await runCore(stack, 'full', kernels);
     const quick = await runCore(stack, 'quick', kernels);
     const plain = both ? await runCore(stack, 'full', plainKernels) : null;
     if (round === 0) {
-      cold = full;
+      if (fresh) cold = { ...full, name: 'full, first pass' };
       continue;
     }
     keep('full', full);
@@ -65,7 +67,7 @@ export async function comparePipelines(
     full: medianRun(runs.get('full') ?? []),
     quick: medianRun(runs.get('quick') ?? []),
     plainKernels: median('plain'),
-    cold: { ...cold, name: 'full, first pass' },
+    cold,
   };
 }
 

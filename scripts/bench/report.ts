@@ -6,7 +6,7 @@ import { figure, textTable } from './text-table';
 /** Throughputs of one core, stage by stage, and how many times the script's each is. */
 export function speedTable(comparison: Comparison): string {
   const { plainScript, tunedScript, cold, recording } = comparison;
-  const all = [...pipelinesOf(comparison), cold];
+  const all = [...pipelinesOf(comparison), ...(cold ? [cold] : [])];
   const beside = (value: number, ofScript: number | undefined) =>
     ofScript === undefined ? figure(value) : `${figure(value)} (${figure(value / ofScript)}x)`;
   const rate = (label: string, amount: (run: PipelineRun) => number, name: keyof StageSeconds) => {
