@@ -38,6 +38,14 @@ export default async function OverviewPage() {
           Each says on its page what is wrong with it and what can still be used.
         </MarginNote>
       ) : null}
+      {storage && storage.checks.notIntact > 0 ? (
+        <MarginNote
+          tone="caution"
+          title={`${countOf(storage.checks.notIntact, 'stored stack is', 'stored stacks are')} damaged`}
+        >
+          The bytes on disk are not those that were sent. <Link href="/lab/storage">See which</Link>
+        </MarginNote>
+      ) : null}
       {storage ? (
         <MarginNote title="Store">
           {countOf(storage.recordings, 'recording')}, {formatBytes(storage.bytes)}

@@ -33,8 +33,8 @@ export function AskNewPasswordForm({ ask }: { ask: (email: string) => Promise<As
     return (
       <div role="status" className="flex flex-col gap-2">
         <p>
-          If <strong className="[overflow-wrap:anywhere]">{askedFor}</strong> has an account here, a mail with a
-          link is on its way. The link works once and for an hour.
+          If <strong className="[overflow-wrap:anywhere]">{askedFor}</strong> has an account here, a mail with
+          a link is on its way. The link works once and for an hour.
         </p>
         <p className="text-note text-ink-2">
           Nothing after some minutes? Look among unwanted mail, or ask your laboratory&rsquo;s administrator.

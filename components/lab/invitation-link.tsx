@@ -26,7 +26,10 @@ export function InvitationLink({ name, invitation, onClose }: InvitationLinkProp
           </Button>
         }
       >
-        <p>They have an account, or another laboratory&rsquo;s invitation to it: no link is needed.</p>
+        <p>
+          They have an account, or another laboratory&rsquo;s invitation to it: no link is needed. Whoever has
+          an account is told by mail.
+        </p>
       </Dialog>
     );
   }
@@ -45,8 +48,8 @@ export function InvitationLink({ name, invitation, onClose }: InvitationLinkProp
       }
     >
       <p>
-        Send them this link. It is shown this once, opens the account once, and ends{' '}
-        <Moment at={invitation.expiresAt} />.
+        A mail with a link is on its way to them. This is another one to hand over yourself: it is shown this
+        once. Whichever is used first opens the account, once; both end <Moment at={invitation.expiresAt} />.
       </p>
       <code className="mt-2 block break-all bg-sunk p-2" data-testid="invitation-link">
         {invitation.url}

@@ -15,11 +15,19 @@ import { Cell, HeadCell, Row, Table } from '@/components/ui/table';
 import { ROLE_NAMES } from '@/lib/access';
 import type { ListShape } from '@/lib/lists/list-state';
 import type { InvitationView, MemberView } from '@/lib/views/lab-view';
+import { AccountDialog } from './account-dialog';
 import { InvitationLink } from './invitation-link';
 import { InviteDialog } from './invite-dialog';
 import { RolesDialog } from './roles-dialog';
 
 const SHAPE: ListShape = { sorts: ['name', 'createdAt'], defaultSort: 'name', filters: ['q'] };
+
+/** How the mail with an invitation fares. */
+function mailWords({ state, delayed }: NonNullable<MemberView['invitationMail']>): string {
+  if (delayed) return state === 'failed' ? 'mail could not be delivered' : 'mail delayed, tried again';
+  const words = { waiting: 'mail on its way', sent: 'mail sent', kept: 'mail kept here', dropped: '', failed: 'mail could not be delivered' }; // prettier-ignore
+  return words[state];
+}
 
 /** People of the laboratory with their roles; an administrator changes them here. */
 export function PeopleTable({ mayChange, viewerId }: { mayChange: boolean; viewerId: string }) {
@@ -29,6 +37,7 @@ export function PeopleTable({ mayChange, viewerId }: { mayChange: boolean; viewe
   const [editing, setEditing] = useState<MemberView | null>(null);
   const [removing, setRemoving] = useState<MemberView | null>(null);
   const [renewing, setRenewing] = useState<MemberView | null>(null);
+  const [helping, setHelping] = useState<MemberView | null>(null);
   const [link, setLink] = useState<{ name: string; invitation: InvitationView } | null>(null);
   const refresh = () => client.invalidateQueries({ queryKey: ['list'] });
   return (
@@ -76,6 +85,9 @@ export function PeopleTable({ mayChange, viewerId }: { mayChange: boolean; viewe
                           invited, link ends <Moment at={member.invitedUntil} />
                         </span>
                       ) : null}
+                      {member.invitationMail ? (
+                        <span className="block text-small">{mailWords(member.invitationMail)}</span>
+                      ) : null}
                     </Cell>
                     {mayChange ? (
                       <Cell numeric>
@@ -85,7 +97,9 @@ export function PeopleTable({ mayChange, viewerId }: { mayChange: boolean; viewe
                           <span className="flex flex-wrap justify-end gap-2">
                             {member.invitedUntil ? (
                               <Button onClick={() => setRenewing(member)}>New link</Button>
-                            ) : null}
+                            ) : (
+                              <Button onClick={() => setHelping(member)}>Account</Button>
+                            )}
                             <Button onClick={() => setEditing(member)}>Change roles</Button>
                             <Button onClick={() => setRemoving(member)}>Remove</Button>
                           </span>
@@ -133,6 +147,7 @@ export function PeopleTable({ mayChange, viewerId }: { mayChange: boolean; viewe
       >
         The link before it opens nothing any more.
       </ConfirmDialog>
+      {helping ? <AccountDialog key={helping.id} member={helping} onClose={() => setHelping(null)} /> : null}
       {link ? <InvitationLink {...link} onClose={() => setLink(null)} /> : null}
     </>
   );

@@ -7,6 +7,7 @@ import { ViewerPanel, type ViewedRecording } from '@/components/canvas/viewer-pa
 import { useRecording } from '@/components/data/use-recording';
 import { ButtonLink } from '@/components/ui/button';
 import { MarginNote } from '@/components/ui/margin-note';
+import { Moment } from '@/components/ui/moment';
 import { NoPermission, StaleLine } from '@/components/ui/page-states';
 import { ProgressThread } from '@/components/ui/progress-thread';
 import { PageTitle, Section, Sheet } from '@/components/ui/sheet';
@@ -57,6 +58,12 @@ export function RecordingSheet({
       marginLabel="Image quality and warnings"
       margin={
         <>
+          {recording.damage ? (
+            <MarginNote tone="caution" title="The stored original is damaged">
+              Seen <Moment at={recording.damage.since} />. {recording.damage.detail} Results made before are
+              kept. Restore the file from a backup, or send the stack again.
+            </MarginNote>
+          ) : null}
           {warnings.map(({ code, detail }) => (
             <MarginNote key={code} title={WARNING_TITLES[code] ?? 'Look at this'} tone="warning">
               {detail}

@@ -31,6 +31,8 @@ export const recordingViewSchema = z.object({
   metadata: z.object({ pixelSize_m: z.number().nullable(), frameInterval_s: z.number().nullable() }),
   refusal: codedSchema.extend({ usePages: z.int().optional(), channels: z.int().optional() }).nullable(),
   warnings: z.array(codedSchema),
+  /** Since when the stored bytes are known not to be those that were sent; null while they are. */
+  damage: z.object({ since: z.iso.datetime(), detail: z.string() }).nullable(),
   createdBy: personSchema.nullable(),
   deletedAt: z.iso.datetime().nullable(),
   analyses: z.int(),

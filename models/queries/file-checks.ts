@@ -68,18 +68,6 @@ export async function saveFinding(
   return before?.state ?? null;
 }
 
-/** When the files of one recording were found not to be intact; null where they are, or nobody has looked. */
-export async function damageOf(
-  labId: string,
-  recordingId: string,
-): Promise<{ since: Date; detail: string } | null> {
-  return selectRow<{ since: Date; detail: string }>(
-    `SELECT since, coalesce(detail, '') AS detail FROM file_checks
-     WHERE lab_id = $1 AND recording_id = $2 AND state <> 'intact' AND since IS NOT NULL`,
-    [labId, recordingId],
-  );
-}
-
 export async function fileCheckSummary(labId: string): Promise<StorageView['checks']> {
   const row = await selectRow<{
     checked: number;

@@ -34,6 +34,8 @@ interface Row extends ItemRow, Made {
   deleted_at: Date | null;
   analyses: number;
   check_progress: number | null;
+  damaged_since: Date | null;
+  damage_detail: string | null;
 }
 
 const SELECT = `g.id, g.run_id, r.campaign_id, g.name, g.state, g.kind, g.bytes, g.frames, g.width, g.height,
@@ -41,8 +43,10 @@ const SELECT = `g.id, g.run_id, r.campaign_id, g.name, g.state, g.kind, g.bytes,
   g.updated_at, g.deleted_at, ${personJson('u')} AS created_by,
   (SELECT count(*)::int FROM analyses a WHERE a.recording_id = g.id) AS analyses,
   (SELECT max(j.progress) FROM job_runs j WHERE g.state = 'checking' AND j.subject_id = g.id
-     AND j.kind = 'ingest-recording' AND j.state IN ('waiting', 'running')) AS check_progress`;
-const FROM = 'recordings g JOIN runs r ON r.id = g.run_id LEFT JOIN users u ON u.id = g.created_by';
+     AND j.kind = 'ingest-recording' AND j.state IN ('waiting', 'running')) AS check_progress,
+  k.since AS damaged_since, k.detail AS damage_detail`;
+const FROM =
+  'recordings g JOIN runs r ON r.id = g.run_id LEFT JOIN users u ON u.id = g.created_by LEFT JOIN file_checks k ON k.recording_id = g.id';
 
 function viewOf(row: Row, received: number | undefined): RecordingView {
   const { refusal, metadata } = row;
@@ -68,6 +72,10 @@ function viewOf(row: Row, received: number | undefined): RecordingView {
     },
     refusal,
     warnings: row.warnings,
+    damage: row.damaged_since && {
+      since: row.damaged_since.toISOString(),
+      detail: row.damage_detail ?? '',
+    },
     createdBy: row.created_by,
     deletedAt: iso(row.deleted_at),
     analyses: row.analyses,

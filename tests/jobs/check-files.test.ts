@@ -11,7 +11,8 @@ import { startWorker } from '@/jobs/worker';
 import { newId } from '@/lib/ids';
 import { models } from '@/models';
 import type { Recording } from '@/models/recording';
-import { damageOf, fileCheckSummary, recordingsToCheck } from '@/models/queries/file-checks';
+import { fileCheckSummary, recordingsToCheck } from '@/models/queries/file-checks';
+import { getRecording } from '@/models/queries/recordings';
 import { execute, selectRows } from '@/models/queries/select';
 import { freshDatabase, type FreshDatabase } from '../helpers/fresh-database';
 import { makeLab, makeRecording, type LabRows } from '../helpers/lab-rows';
@@ -58,6 +59,7 @@ async function check(sampleBytes = 1e9): Promise<void> {
 const stateOf = async ({ id }: Recording) =>
   (await selectRows<{ state: string }>('SELECT state FROM file_checks WHERE recording_id = $1', [id]))[0]
     ?.state;
+const damageOf = async (id: string) => (await getRecording(lab.labId, id)).damage;
 const alarms = () =>
   selectRows<{ user_id: string; facts: { recordings: string[] } }>(
     `SELECT user_id, facts FROM mails WHERE lab_id = $1 AND kind = 'files-damaged' ORDER BY created_at`,
@@ -89,10 +91,10 @@ describe('the check of stored files', () => {
       'damaged',
       'missing',
     ]);
-    expect((await damageOf(lab.labId, flipped.id))!.detail).toBe(
+    expect((await damageOf(flipped.id))!.detail).toBe(
       `SHA-256 is ${sha256(bytes).slice(0, 12)}.., at arrival it was ${sha256('stack flipped').slice(0, 12)}...`,
     );
-    expect(await damageOf(lab.labId, good.id)).toBeNull();
+    expect(await damageOf(good.id)).toBeNull();
     const [alarm, ...more] = await alarms();
     expect([alarm.user_id, [...alarm.facts.recordings].sort(), more]).toEqual([
       lab.userId,
@@ -107,13 +109,13 @@ describe('the check of stored files', () => {
     await models().Membership.update({ roles: ['lab_administrator'] }, { where: { labId: lab.labId } });
     writeFileSync(stackFile(recording.id), 'other bytes');
     await check();
-    const first = await damageOf(lab.labId, recording.id);
+    const first = await damageOf(recording.id);
     await check();
-    expect((await damageOf(lab.labId, recording.id))!.since).toEqual(first!.since);
+    expect((await damageOf(recording.id))!.since).toEqual(first!.since);
     expect(await alarms()).toHaveLength(1);
     writeFileSync(stackFile(recording.id), 'stack once');
     await check();
-    expect(await damageOf(lab.labId, recording.id)).toBeNull();
+    expect(await damageOf(recording.id)).toBeNull();
     expect((await audit()).map(([action]) => action)).toEqual(['files.damaged', 'files.restored']);
   });
 

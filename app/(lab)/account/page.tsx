@@ -1,16 +1,20 @@
 import type { Metadata } from 'next';
 import { requireViewer } from '@/auth/page';
+import { EndSessions } from '@/components/account/end-sessions';
+import { NoticesForm } from '@/components/account/notices-form';
 import { PasswordForm } from '@/components/account/password-form';
 import { PathThread } from '@/components/ui/path-thread';
 import { Facts, PageTitle, Section, Sheet } from '@/components/ui/sheet';
 import { ROLE_NAMES } from '@/lib/access';
+import { noticesOff } from '@/models/queries/notices';
 import { pathLevels } from '../path-levels';
-import { changeOwnPassword } from './actions';
+import { changeOwnPassword, endOwnSessions, saveNotices } from './actions';
 
 export const metadata: Metadata = { title: 'Account' };
 
 export default async function AccountPage() {
   const viewer = await requireViewer('own-account', '/account');
+  const off = await noticesOff(viewer.labId, viewer.userId);
   return (
     <>
       <PathThread levels={pathLevels(viewer)} />
@@ -27,8 +31,14 @@ export default async function AccountPage() {
             ]}
           />
         </Section>
+        <Section title="Mail" count={`from ${viewer.lab.name}`}>
+          <NoticesForm off={off} save={saveNotices} />
+        </Section>
         <Section title="Password" count="changing it ends your other sessions">
           <PasswordForm change={changeOwnPassword} />
+        </Section>
+        <Section title="Sessions" count="on this and other devices">
+          <EndSessions end={endOwnSessions} />
         </Section>
       </Sheet>
     </>

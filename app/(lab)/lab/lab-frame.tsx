@@ -5,7 +5,7 @@ import { PageTitle, Sheet } from '@/components/ui/sheet';
 import { TabLinks } from '@/components/ui/tabs';
 import { pathLevels } from '../path-levels';
 
-export type LabTab = 'people' | 'tokens' | 'queue' | 'storage' | 'audit';
+export type LabTab = 'people' | 'tokens' | 'queue' | 'storage' | 'mail' | 'audit';
 
 /** Title and tabs around each part of the laboratory's own pages; only what the viewer may open. */
 export function LabFrame({
@@ -24,6 +24,7 @@ export function LabFrame({
     { href: '/lab/tokens', key: 'tokens', label: 'Tokens', open: may(viewer, 'own-tokens') },
     { href: '/lab/queue', key: 'queue', label: 'Queue and workers', open: may(viewer, 'see-queue') },
     { href: '/lab/storage', key: 'storage', label: 'Storage', open: may(viewer, 'see-storage') },
+    { href: '/lab/mail', key: 'mail', label: 'Mail', open: may(viewer, 'see-mail') },
     { href: '/lab/audit', key: 'audit', label: 'Audit trail', open: may(viewer, 'see-audit') },
   ].filter(({ open }) => open);
   return (

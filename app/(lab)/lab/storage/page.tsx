@@ -1,7 +1,12 @@
 import type { Metadata } from 'next';
+import { Suspense } from 'react';
 import { requireViewer } from '@/auth/page';
-import { Facts } from '@/components/ui/sheet';
-import { formatBytes } from '@/lib/format/bytes';
+import { may } from '@/auth/viewer';
+import { FileChecks } from '@/components/lab/file-checks';
+import { MarginNote } from '@/components/ui/margin-note';
+import { ProgressThread } from '@/components/ui/progress-thread';
+import { Facts, Section } from '@/components/ui/sheet';
+import { formatBytes, formatBytesOf } from '@/lib/format/bytes';
 import { formatCount } from '@/lib/format/count';
 import { labStorage } from '@/models/queries/storage';
 import { LabFrame } from '../lab-frame';
@@ -10,22 +15,60 @@ export const metadata: Metadata = { title: 'Storage' };
 
 export default async function StoragePage() {
   const viewer = await requireViewer('see-storage', '/lab/storage');
-  const { recordings, bytes, arrivingBytes, freeBytes, quotaBytes } = await labStorage(viewer.labId);
+  const storage = await labStorage(viewer.labId);
+  const { recordings, bytes, arrivingBytes, freeBytes, quotaBytes } = storage;
+  const used = bytes + arrivingBytes;
   return (
-    <LabFrame viewer={viewer} tab="storage">
-      <Facts
-        items={[
-          { name: 'Recordings', value: formatCount(recordings) },
-          { name: 'Stored', value: formatBytes(bytes) },
-          { name: 'May keep', value: formatBytes(quotaBytes) },
-          { name: 'Arriving', value: formatBytes(arrivingBytes) },
-          { name: 'Free', value: freeBytes === null ? 'unknown' : formatBytes(freeBytes) },
-        ]}
-      />
-      <p className="max-w-[70ch] pt-4 text-note text-ink-2">
-        Stacks are kept as they were sent, under random names in the data folder. Their SHA-256 stands on the
-        page of each recording.
-      </p>
+    <LabFrame viewer={viewer} tab="storage" margin={<StoreNotes used={used} quotaBytes={quotaBytes} />}>
+      <Section title="Kept" count={`${formatBytesOf(used, quotaBytes)} that this laboratory may keep`}>
+        <div className="py-2">
+          <ProgressThread
+            stages={[{ beads: BEADS, filled: Math.min(BEADS, (BEADS * used) / quotaBytes) }]}
+            label={`${percentOf(used, quotaBytes)} of what may be kept`}
+            tone={used > NEARLY * quotaBytes ? 'amber' : 'ink'}
+          />
+        </div>
+        <Facts
+          items={[
+            { name: 'Recordings', value: formatCount(recordings) },
+            { name: 'Stored', value: formatBytes(bytes) },
+            { name: 'Arriving', value: formatBytes(arrivingBytes) },
+            { name: 'May keep', value: formatBytes(quotaBytes) },
+            { name: 'Free on disk', value: freeBytes === null ? 'unknown' : formatBytes(freeBytes) },
+          ]}
+        />
+      </Section>
+      <Suspense>
+        <FileChecks mayAsk={may(viewer, 'check-files')} initial={storage} />
+      </Suspense>
     </LabFrame>
+  );
+}
+
+/** Beads of the thread that fills as the store does. */
+const BEADS = 20;
+/** From this share on the thread is amber and the margin says so. */
+const NEARLY = 0.9;
+
+const percentOf = (part: number, whole: number) => `${Math.round((100 * part) / whole)} %`;
+
+function StoreNotes({ used, quotaBytes }: { used: number; quotaBytes: number }) {
+  return (
+    <>
+      {used > NEARLY * quotaBytes ? (
+        <MarginNote tone="warning" title="Nearly full">
+          {percentOf(used, quotaBytes)} of what this laboratory may keep is used. A stack that does not fit is
+          refused before it is sent. Remove recordings, or have the bound raised by whoever runs Beadline.
+        </MarginNote>
+      ) : null}
+      <MarginNote title="How stacks are kept">
+        As they were sent, under random names in the data folder. Their SHA-256 stands on the page of each
+        recording.
+      </MarginNote>
+      <MarginNote title="Checks">
+        Every night the files that were looked at longest ago are read again and compared with their SHA-256.
+        Damage is mailed to the administrators and stands on the overview.
+      </MarginNote>
+    </>
   );
 }

@@ -1,0 +1,69 @@
+'use client';
+
+import { useState } from 'react';
+import { api } from '@/components/data/api-client';
+import { Button } from '@/components/ui/button';
+import { Dialog } from '@/components/ui/dialog';
+import { ErrorState } from '@/components/ui/page-states';
+import { StateWord } from '@/components/ui/state-bead';
+import type { MemberView } from '@/lib/views/lab-view';
+
+type Act = 'sessions-end' | 'password-reset';
+const DONE: Record<Act, string> = {
+  'sessions-end': 'Every session has ended.',
+  'password-reset': 'A mail with the link is on its way.',
+};
+
+/** Help with a member's account: neither act shows or sets a password. */
+export function AccountDialog({ member, onClose }: { member: MemberView; onClose: () => void }) {
+  const [busy, setBusy] = useState<Act | null>(null);
+  const [done, setDone] = useState<Act | null>(null);
+  const [problem, setProblem] = useState<string | null>(null);
+  async function act(which: Act) {
+    setBusy(which);
+    setProblem(null);
+    setDone(null);
+    try {
+      await api(`/api/v1/people/${member.id}/${which}`, { method: 'POST' });
+      setDone(which);
+    } catch (error) {
+      setProblem(error instanceof Error ? error.message : 'That did not work.');
+    } finally {
+      setBusy(null);
+    }
+  }
+  return (
+    <Dialog
+      open
+      onClose={onClose}
+      title={`The account of ${member.person.name}`}
+      actions={
+        <Button kind="main" onClick={onClose}>
+          Close
+        </Button>
+      }
+    >
+      <div className="flex flex-col items-start gap-2 pt-1">
+        <p>
+          A lost device, or a place left signed in: their sessions end everywhere, and they sign in again.
+          Tokens stay.
+        </p>
+        <Button busy={busy === 'sessions-end'} onClick={() => void act('sessions-end')}>
+          End their sessions
+        </Button>
+        <p className="pt-3">
+          A forgotten password: a link goes to{' '}
+          <span className="[overflow-wrap:anywhere]">{member.person.email}</span> by mail, with which they
+          choose a new one.
+        </p>
+        <Button busy={busy === 'password-reset'} onClick={() => void act('password-reset')}>
+          Mail them a link
+        </Button>
+        <div role="status" className="min-h-5 pt-1">
+          {done ? <StateWord state="done">{DONE[done]}</StateWord> : null}
+        </div>
+        {problem ? <ErrorState live what={problem} /> : null}
+      </div>
+    </Dialog>
+  );
+}

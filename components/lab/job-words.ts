@@ -1,0 +1,13 @@
+const KIND_WORDS: Record<string, string> = {
+  'ingest-recording': 'check a recording',
+  'measure-image': 'measure the image',
+  'detect-spots': 'find spots',
+  'link-tracks': 'link tracks',
+  'measure-flow': 'measure the flow',
+  'send-mail': 'send a mail',
+  'check-files': 'check stored files',
+};
+
+/** What a piece of work does: `find spots, chunk 3`. */
+export const jobWords = ({ kind, chunk }: { kind: string; chunk: number }): string =>
+  `${KIND_WORDS[kind] ?? kind}${chunk >= 0 ? `, chunk ${chunk + 1}` : ''}`;
