@@ -40,6 +40,10 @@ export const ACTIONS = {
   // An administrator sees that things exist and how large they are, not what is in them.
   'list-records': { scope: 'read', grants: everyone },
   'see-data': { scope: 'read', grants: scientists },
+  compare: {
+    scope: 'read',
+    grants: { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' },
+  },
   'create-campaign': { scope: 'write', grants: { experimentalist: 'yes', principal_investigator: 'yes' } },
   'edit-campaign': { scope: 'write', grants: { experimentalist: 'own', principal_investigator: 'yes' } },
   'create-run': { scope: 'write', grants: { experimentalist: 'yes', principal_investigator: 'yes' } },

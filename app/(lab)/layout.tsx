@@ -14,6 +14,7 @@ export default async function LabLayout({ children }: { children: ReactNode }) {
     { href: '/', label: 'Overview' },
     { href: '/campaigns', label: 'Campaigns' },
     ...(may(viewer, 'see-data') ? [{ href: '/analyses', label: 'Analyses' }] : []),
+    ...(may(viewer, 'compare') ? [{ href: '/compare', label: 'Compare' }] : []),
     { href: '/lab', label: 'Lab' },
   ];
   const labs = viewer.labs.map(({ id, name }) => ({ id, name, current: id === viewer.labId }));

@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import type { Action } from '@/lib/access';
 import { campaignCreateSchema, campaignPatchSchema } from '@/lib/schemas/campaign';
+import { compareQuery } from '@/lib/schemas/compare';
 import { memberCreateSchema, rolesPatchSchema, tokenCreateSchema } from '@/lib/schemas/lab';
 import * as lists from '@/lib/schemas/list-query';
 import { analysisCreateSchema, recipeCreateSchema, tryRecipeSchema } from '@/lib/schemas/recipe';
@@ -9,6 +10,7 @@ import { runCreateSchema, runPatchSchema } from '@/lib/schemas/run';
 import * as analysis from '@/lib/views/analysis-view';
 import { campaignViewSchema } from '@/lib/views/campaign-view';
 import { listOf } from '@/lib/views/common';
+import { compareViewSchema } from '@/lib/views/compare-view';
 import * as lab from '@/lib/views/lab-view';
 import { mailItemViewSchema, mailViewSchema } from '@/lib/views/mail-view';
 import { recipeViewSchema } from '@/lib/views/recipe-view';
@@ -92,6 +94,13 @@ export const ROUTES = {
     body: runCreateSchema,
     answer: runViewSchema,
     status: 201,
+  },
+
+  'GET /compare': {
+    action: 'compare',
+    summary: 'Runs side by side, with the steady law fitted to those of each campaign',
+    query: compareQuery,
+    answer: compareViewSchema,
   },
 
   'GET /runs/{runId}': {
