@@ -1,4 +1,4 @@
-import type { ImageModel } from '../types';
+import type { BackgroundDrift, ImageModel } from '../types';
 import { paintBlocks } from './block-grid';
 
 /**
@@ -18,19 +18,28 @@ export function backgroundOfFrame(model: ImageModel, frameIndex: number, out: Fl
     out.set(backgroundE);
     return;
   }
-  const { columns, rows, nodeFrames, blocksE } = drift;
-  const blocks = columns * rows;
+  const { columns, rows } = drift;
+  const blocks = new Float64Array(columns * rows);
+  blocksOfFrame(drift, frameIndex, blocks);
+  paintBlocks(blocks, { width, height, columns, rows }, out);
+  // Straight lines carried on to the border may fall below no light at all.
+  for (let i = 0; i < out.length; i++) if (out[i] < 0) out[i] = 0;
+}
+
+/** Blocks of the background of a frame, along straight lines between the nodes in time. */
+export function blocksOfFrame(
+  { nodeFrames, blocksE }: BackgroundDrift,
+  frameIndex: number,
+  blocks: Float64Array,
+): void {
   const last = nodeFrames.length - 1;
   let k = 0;
   while (k < last - 1 && frameIndex >= nodeFrames[k + 1]) k++;
   const place = (frameIndex - nodeFrames[k]) / (nodeFrames[k + 1] - nodeFrames[k]);
   const share = Math.max(0, Math.min(1, place));
-  const table = new Float64Array(blocks);
-  for (let b = 0; b < blocks; b++) {
-    const before = blocksE[k * blocks + b];
-    table[b] = before + share * (blocksE[(k + 1) * blocks + b] - before);
+  const from = k * blocks.length;
+  for (let b = 0; b < blocks.length; b++) {
+    const before = blocksE[from + b];
+    blocks[b] = before + share * (blocksE[from + blocks.length + b] - before);
   }
-  paintBlocks(table, { width, height, columns, rows }, out);
-  // Straight lines carried on to the border may fall below no light at all.
-  for (let i = 0; i < out.length; i++) if (out[i] < 0) out[i] = 0;
 }

@@ -61,21 +61,33 @@ export function interpolateBlocks(values: ArrayLike<number>, grid: BlockGrid): F
 export function paintBlocks(values: ArrayLike<number>, grid: BlockGrid, image: Float32Array): void {
   const { width, height, columns, rows } = grid;
   const middleX = blockMiddles(width, columns);
-  const middleY = blockMiddles(height, rows);
+  const { above, share } = rowsOfBlocks(height, rows);
   const row = new Float64Array(columns);
-  for (let y = 0, r = 0; y < height; y++) {
-    while (r < rows - 2 && y > middleY[r + 1]) r++;
-    const below = Math.min(rows - 1, r + 1);
-    const share = rows > 1 ? (y - middleY[r]) / (middleY[below] - middleY[r]) : 0;
-    for (let c = 0; c < columns; c++) {
-      const top = values[r * columns + c];
-      row[c] = top + share * (values[below * columns + c] - top);
-    }
+  for (let y = 0; y < height; y++) {
+    const from = above[y] * columns;
+    const below = Math.min(rows - 1, above[y] + 1) * columns;
+    for (let c = 0; c < columns; c++)
+      row[c] = values[from + c] + share[y] * (values[below + c] - values[from + c]);
     paintRow(row, middleX, image, y * width, width);
   }
 }
 
-function paintRow(
+/** For each row of pixels the row of blocks above it, and its way from there to the next: 0 to 1, farther at borders. */
+export function rowsOfBlocks(height: number, rows: number): { above: Int32Array; share: Float64Array } {
+  const middle = blockMiddles(height, rows);
+  const above = new Int32Array(height);
+  const share = new Float64Array(height);
+  if (rows === 1) return { above, share };
+  for (let y = 0, r = 0; y < height; y++) {
+    while (r < rows - 2 && y > middle[r + 1]) r++;
+    above[y] = r;
+    share[y] = (y - middle[r]) / (middle[r + 1] - middle[r]);
+  }
+  return { above, share };
+}
+
+/** Draws a row of blocks out to a row of pixels; `middle` is where the blocks' middles are. */
+export function paintRow(
   row: Float64Array,
   middle: Float64Array,
   image: Float32Array,
@@ -96,7 +108,8 @@ function paintRow(
   }
 }
 
-function blockMiddles(pixels: number, blocks: number): Float64Array {
+/** Pixel in the middle of each block along an axis. */
+export function blockMiddles(pixels: number, blocks: number): Float64Array {
   const middle = new Float64Array(blocks);
   for (let b = 0; b < blocks; b++) {
     middle[b] = 0.5 * (blockStart(b, blocks, pixels) + blockStart(b + 1, blocks, pixels) - 1);

@@ -56,13 +56,19 @@ export interface FramePlanes {
   readonly response: Float32Array;
 }
 
-/** Operations on frames of one size. Each frame goes through them in this order. */
+/** Operations on frames of one size. Each frame goes through them in this order; the background may stay. */
 export interface FrameKernels extends FramePlanes {
   readonly width: number;
   readonly height: number;
   readonly kernel: SpotKernel;
   /** Where compiled kernels find the planes; null when there are none and the plain ones do the work. */
   readonly compiled: CompiledPlanes | null;
+  /**
+   * Fills `background` along straight lines between the middles of blocks, nowhere below 0.
+   *
+   * @param blocks electrons, row by row
+   */
+  paintBackground(blocks: Float64Array, grid: { columns: number; rows: number }): void;
   /** Fills `electrons` and `usable`. Pixels that are bad or hold no finite number get 0 electrons. */
   toElectrons(counts: Float32Array, scale: CountScale): void;
   /** Light of the frame relative to `background`; see `measureLightLevel`. */

@@ -1,6 +1,7 @@
 import { measureLightLevel } from '../detection/light-level';
 import { createMatchedFilter, findPeaks } from '../detection/matched-filter';
 import { DARK_VARIANCE_E2 } from '../detection/second-look';
+import { paintBlocks } from '../image-model/block-grid';
 import type { FrameKernels, ImageSpec, Kernels, Peaks } from './kernels';
 import { saturationElectrons } from './noise-units';
 
@@ -20,6 +21,12 @@ function forImages({ width, height, spotSigmaPx }: ImageSpec): FrameKernels {
   const filter = createMatchedFilter(width, height, spotSigmaPx);
   const peaks: Peaks = { count: 0, at: new Int32Array(1024) };
   let saturationE = Infinity;
+
+  const paintBackground: FrameKernels['paintBackground'] = (blocks, { columns, rows }) => {
+    paintBlocks(blocks, { width, height, columns, rows }, background);
+    // Straight lines carried on to the border may fall below no light at all.
+    for (let i = 0; i < pixels; i++) if (background[i] < 0) background[i] = 0;
+  };
 
   const toElectrons: FrameKernels['toElectrons'] = (counts, scale) => {
     // Rounded to 32 bits on the way, as vectors do it, so that both sets agree on what is saturated.
@@ -64,6 +71,7 @@ function forImages({ width, height, spotSigmaPx }: ImageSpec): FrameKernels {
     bare,
     model,
     response,
+    paintBackground,
     toElectrons,
     lightLevel: (readVariance) => measureLightLevel(electrons, background, usable, readVariance),
     respond,

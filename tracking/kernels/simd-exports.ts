@@ -19,6 +19,7 @@ export interface SimdExports {
     perCount: number,
     saturation: number,
   ): void;
+  mixRows(top: number, bottom: number, share: number, out: number, pixels: number): void;
   respond(
     electrons: number,
     usable: number,

@@ -5,6 +5,7 @@ import type { FrameKernels, ImageSpec, Kernels, Peaks } from './kernels';
 import { saturationElectrons } from './noise-units';
 import { plainKernels } from './plain-kernels';
 import type { InstantiateSimd } from './simd-exports';
+import { createSimdBackground } from './simd-background';
 import { createSimdLight } from './simd-light';
 import { reservePlanes } from './simd-planes';
 
@@ -100,6 +101,7 @@ function simdImages(spec: ImageSpec, instantiate: InstantiateSimd): FrameKernels
     bare: arena.floats(at.bare, pixels),
     model: arena.floats(at.model, pixels),
     response,
+    paintBackground: createSimdBackground(simd, arena, at, width, height),
     toElectrons,
     lightLevel: createSimdLight(simd, arena, at, pixels),
     respond,

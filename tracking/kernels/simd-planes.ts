@@ -25,6 +25,8 @@ export interface SimdPlanes {
   lightMost: number;
   /** f64, three sums over them. */
   lightSums: number;
+  /** f32, two rows of blocks of the background, drawn out to the image's width. */
+  blockRows: number;
   /** f32 at distance 0 .. reach. */
   weights: number;
   /** f32 factor per column of the response. */
@@ -70,6 +72,7 @@ export function reservePlanes(
     lightBackground: floats(lightMost),
     lightMost,
     lightSums: floats(6),
+    blockRows: floats(2 * paddedWidth),
     weights: floats(reach + 1),
     correctionX: floats(paddedWidth),
     correctionY: floats(height),

@@ -104,6 +104,23 @@ describe.each(SIZES)('on a frame of %d x %d px the compiled kernels', (width, he
     }
   });
 
+  test('draw the same background from blocks', () => {
+    const random = createRandom(4);
+    for (const [columns, rows] of [
+      [1, 1],
+      [1, Math.ceil(height / 3)],
+      [Math.ceil(width / 5), 2],
+      [width, height],
+    ]) {
+      // Steep slopes, so that the lines carried on to the border fall below 0.
+      const blocks = Float64Array.from({ length: columns * rows }, () => 20 * random.uniform());
+      const [a, b] = [plainKernels, simd].map((k) => k.forImages({ width, height, spotSigmaPx: 1.2 }));
+      for (const frame of [a, b]) frame.paintBackground(blocks, { columns, rows });
+      expectNear(b.background, a.background, LIGHT_REL);
+      expect(Math.min(...b.background)).toBeGreaterThanOrEqual(0);
+    }
+  });
+
   test('find the same peaks in the same picture, among equal neighbours too', () => {
     const random = createRandom(9);
     const [a, b] = [plainKernels, simd].map((k) => k.forImages({ width, height, spotSigmaPx: 1.2 }));

@@ -10,6 +10,7 @@ export { paintSpot } from './joint-fit-paint';
 export { peakOfResidual } from './joint-fit-residual';
 export { setUpJointFit } from './joint-fit-set-up';
 export { gatherLight, lightSums } from './light-sums';
+export { mixRows } from './mix-rows';
 export { respond } from './respond';
 export { toElectrons } from './to-electrons';
 
