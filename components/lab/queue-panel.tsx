@@ -30,6 +30,14 @@ const STATES = [
   { value: 'done', label: 'Done' },
 ];
 
+const NOTHING: Record<string, string> = {
+  waiting: 'No work waits.',
+  running: 'No work is running.',
+  failed: 'No work has failed.',
+  stopped: 'No work was stopped.',
+  done: 'No work is done yet.',
+};
+
 /** Worker processes with their signs of life, and the laboratory's work. */
 export function QueuePanel() {
   const workers = useList<WorkerView>('/api/v1/workers', WORKERS, REFRESH_MS);
@@ -67,9 +75,7 @@ export function QueuePanel() {
         <Answer query={jobs.query} what="the work">
           {({ items }) =>
             items.length === 0 ? (
-              <EmptyState>
-                {state ? `No work is ${state}.` : 'Nothing has been asked of the workers yet.'}
-              </EmptyState>
+              <EmptyState>{NOTHING[state] ?? 'Nothing has been asked of the workers yet.'}</EmptyState>
             ) : (
               <JobTable
                 jobs={items}

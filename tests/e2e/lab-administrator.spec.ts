@@ -1,6 +1,10 @@
+import { readFileSync } from 'node:fs';
 import type { Browser } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { newId } from '@/lib/ids';
+import { models } from '@/models';
 import { closeDatabase } from '@/models/database';
+import { makeRecording } from '../helpers/lab-rows';
 import { sharedServer } from '../helpers/server';
 import { makeTestLab, type TestLab } from '../helpers/test-lab';
 import { launchBrowser, openWindow, signIn, type Visit } from './support/browser';
@@ -25,6 +29,18 @@ afterAll(async () => {
   await browser?.close();
   await closeDatabase();
 });
+
+/** Reads the newest mail to a person on the administrator's pages. @returns the link in it */
+async function linkOfMailTo(name: string, subject: string): Promise<string> {
+  const { page } = visit;
+  await page.goto('/lab/mail');
+  const row = page.getByRole('row').filter({ hasText: name }).filter({ hasText: subject });
+  await row.first().getByText('kept here').waitFor({ timeout: 30_000 });
+  await row.first().getByRole('link').click();
+  const words = page.getByRole('document', { name: 'Words of the mail' });
+  await words.waitFor();
+  return /http\S+/.exec((await words.textContent())!)![0];
+}
 
 const rowOf = (name: string) => visit.page.getByRole('row').filter({ hasText: name });
 
@@ -55,15 +71,16 @@ describe('a lab administrator looks after the people', () => {
     expect(await page.getByText(link).count()).toBe(0);
   });
 
-  it('makes a new link, after which only that one opens the account', async () => {
+  it('makes a new link, after which the one before opens nothing; the mail that was caught has one too', async () => {
     const { page } = visit;
     await rowOf('Ada Reed').getByRole('button', { name: 'New link' }).click();
     await page.getByRole('button', { name: 'Make a new link' }).click();
-    const second = (await page.getByTestId('invitation-link').textContent())!;
     await page.getByRole('button', { name: 'I have kept it' }).click();
     await invited.page.goto(link);
     await invited.page.getByText('This invitation is not open').first().waitFor();
-    await invited.page.goto(second);
+    const mailed = await linkOfMailTo('Ada Reed', 'Your invitation to');
+    await page.goto('/lab');
+    await invited.page.goto(mailed);
     await invited.page.getByRole('textbox', { name: 'Password' }).fill(PASSWORD);
     await invited.page.getByRole('button', { name: 'Choose it and sign in' }).click();
     await invited.page.waitForURL((url) => url.pathname === '/');
@@ -95,7 +112,13 @@ describe('a lab administrator looks after the people', () => {
     const table = page.getByRole('table', { name: 'Audit trail' });
     await table.getByText('removed from the laboratory').waitFor();
     const rows = await table.getByRole('row').allTextContents();
-    const words = ['removed from', 'changed the roles of', 'a new invitation for', 'added to the laboratory'];
+    const words = [
+      'removed from',
+      'changed the roles of',
+      'read a mail to',
+      'a new invitation for',
+      'added to the laboratory',
+    ];
     for (const [i, text] of words.entries()) expect(rows[i + 1]).toContain(text);
     expect(rows[1]).toContain(lab.people.lab_administrator.name);
     await page.getByLabel('What was done').selectOption('Tokens');
@@ -104,7 +127,104 @@ describe('a lab administrator looks after the people', () => {
     await table.waitFor();
     await page.getByLabel('By whom').selectOption(lab.people.analyst.name);
     await page.getByText('Nothing of this kind has been written down.').waitFor();
+    await page.getByLabel('By whom').selectOption('Everybody');
+    await page.getByLabel('Search the audit trail').fill('new invitation');
+    await table.getByRole('row').nth(2).waitFor({ state: 'detached' });
+    expect(await table.getByRole('row').count()).toBe(2);
+    const [file] = await Promise.all([
+      page.waitForEvent('download'),
+      page.getByRole('link', { name: 'Export CSV' }).click(),
+    ]);
+    expect(file.suggestedFilename()).toMatch(/-audit\.csv$/);
+    const lines = readFileSync(await file.path(), 'utf8')
+      .trim()
+      .split('\r\n');
+    expect(lines).toHaveLength(2);
+    expect(lines[1]).toContain('member.invited-again');
     // Of the address that was none.
     expect(visit.complaints).toEqual([expect.stringContaining('422')]);
+  });
+});
+
+describe('a lab administrator looks after accounts, files and work', () => {
+  it('ends the sessions of a member, who signs in again', async () => {
+    const { page } = visit;
+    const { analyst } = lab.people;
+    await signIn(invited.page, analyst);
+    await page.goto('/lab');
+    await rowOf(analyst.name).getByRole('button', { name: 'Account' }).click();
+    await page.getByRole('button', { name: 'End their sessions' }).click();
+    await page.getByText('Every session has ended.').waitFor();
+    await page.getByRole('button', { name: 'Close' }).click();
+    await invited.page.goto('/account');
+    await invited.page.waitForURL((url) => url.pathname === '/sign-in');
+  });
+
+  it('finds the mail with which a person who forgot their password chooses a new one', async () => {
+    const { page } = invited;
+    const { analyst } = lab.people;
+    await page.goto('/sign-in');
+    await page.getByRole('link', { name: 'Have a link sent' }).click();
+    await page.getByLabel('E-mail').fill(analyst.email);
+    await page.getByRole('button', { name: 'Send me a link' }).click();
+    await page.getByText('has an account here, a mail with a link is on its way').waitFor();
+    const link = await linkOfMailTo(analyst.name, 'Choose a new password');
+    await page.goto(link);
+    await page.getByRole('textbox', { name: 'Password' }).fill(PASSWORD);
+    await page.getByRole('button', { name: 'Choose it and sign in' }).click();
+    await page.waitForURL((url) => url.pathname === '/');
+    await page.goto(link);
+    await page.getByText('This link is not open').first().waitFor();
+    expect(invited.complaints).toEqual([]);
+  });
+
+  it('which does without a notice on the account page, and finds that kept', async () => {
+    const { page } = invited;
+    await page.goto('/account');
+    const choice = page.getByLabel('An analysis that I started is done');
+    await choice.uncheck();
+    await page.getByText('Your choice is kept.').waitFor();
+    await page.reload();
+    expect(await choice.isChecked()).toBe(false);
+  });
+
+  it('has stored files checked, and is told of one that is missing', async () => {
+    const { page } = visit;
+    const { labId } = lab;
+    const { userId } = lab.people.experimentalist;
+    const campaign = await models().Campaign.create({ id: newId(), labId, name: 'C', createdBy: userId });
+    await makeRecording(
+      { labId, userId, campaignId: campaign.id },
+      { name: 'lost.tif', sha256: '0'.repeat(64) },
+    );
+    await page.goto('/lab/storage');
+    await page.getByText('1 recording not looked at yet').waitFor();
+    await page.getByRole('button', { name: 'Check now' }).click();
+    await rowOf('lost.tif').getByText('A stored file is not there.').waitFor({ timeout: 30_000 });
+    await page.getByText('1 recording is not as it was sent.').waitFor();
+    await page.goto('/');
+    await page.getByText('1 stored stack is damaged').waitFor();
+    await page.goto('/lab/mail');
+    await rowOf('Stored files damaged').getByText('kept here').waitFor({ timeout: 30_000 });
+  });
+
+  it('runs failed work again and sees it done', async () => {
+    const { page } = visit;
+    const row = await models().JobRun.findOne({ where: { labId: lab.labId, kind: 'check-files' } });
+    await row!.update({
+      state: 'failed',
+      errorCode: 'FAULT',
+      errorDetail: 'Failed 3 times: the disk was away.',
+    });
+    await page.goto('/lab/queue?state=failed');
+    await page.getByText('the disk was away').waitFor();
+    await page.getByRole('button', { name: 'Run again' }).click();
+    await page.getByText('No work has failed.').waitFor();
+    await page.goto('/lab/queue');
+    await rowOf('check stored files').getByText('done').waitFor({ timeout: 30_000 });
+    await page
+      .getByText(/\d s ago/)
+      .first()
+      .waitFor();
   });
 });

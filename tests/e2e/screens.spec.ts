@@ -8,6 +8,7 @@ import { closeDatabase } from '@/models/database';
 import { makeAnalysedRecording } from '../helpers/analysed-recording';
 import { ApiScript } from '../helpers/api-client';
 import { sharedServer } from '../helpers/server';
+import { until } from '../helpers/until';
 import { makeTestLab, type TestLab } from '../helpers/test-lab';
 import {
   expectNoSidewaysScroll,
@@ -40,7 +41,16 @@ const PAGES: Partial<Record<Role, string[]>> = {
     '/nowhere',
   ],
   annotator: ['/lab/storage'],
-  lab_administrator: ['/', '/lab', '/lab/tokens', '/lab/queue', '/lab/storage', '/lab/audit'],
+  lab_administrator: [
+    '/',
+    '/lab',
+    '/lab/tokens',
+    '/lab/queue',
+    '/lab/storage',
+    '/lab/mail',
+    '/lab/mail/MAIL',
+    '/lab/audit',
+  ],
 };
 
 let browser: Browser;
@@ -59,6 +69,7 @@ beforeAll(async () => {
     RUN: made.runId,
     RECORDING: made.recordingId,
     ANALYSIS: made.analysisId,
+    MAIL: await keptMail(),
   };
   browser = await launchBrowser();
 }, 240_000);
@@ -67,6 +78,13 @@ afterAll(async () => {
   await browser?.close();
   await closeDatabase();
 });
+
+/** The news of the analysis, once it has been dealt with. */
+async function keptMail(): Promise<string> {
+  const script = new ApiScript(server.baseUrl, full.people.lab_administrator.token);
+  const list = () => script.json<{ items: { id: string }[] }>('/api/v1/mail?state=kept');
+  return (await until(list, ({ items }) => items.length > 0, { withinMs: 30_000 })).items[0].id;
+}
 
 const addressOf = (page: string) => page.replace(/[A-Z]{3,}/, (name) => ids[name] ?? name);
 
@@ -123,13 +141,17 @@ describe.each(THEMES)('every page in the %s theme', (theme) => {
     await look(empty, 'principal_investigator', pages, theme, 'wide', 'empty');
   }, 60_000);
 
-  it('the sign-in page has no serious violation', async () => {
-    const { context, page } = await openWindow(browser, { theme });
-    await page.goto('/sign-in');
-    await expectNoSeriousViolation(page, `/sign-in in ${theme}`);
-    await page.screenshot({ path: join(SHOTS, `sign-in-${theme}.png`) });
-    await context.close();
-  }, 60_000);
+  it.each(['/sign-in', '/new-password', '/new-password/closed'])(
+    '%s has no serious violation',
+    async (path) => {
+      const { context, page } = await openWindow(browser, { theme });
+      await page.goto(path);
+      await expectNoSeriousViolation(page, `${path} in ${theme}`);
+      await page.screenshot({ path: join(SHOTS, `${path.slice(1).replace('/', '-')}-${theme}.png`) });
+      await context.close();
+    },
+    60_000,
+  );
 });
 
 describe('every page on a phone', () => {
