@@ -45,7 +45,7 @@ export interface DetectChunkOutput {
   spots: Uint8Array;
   spotCount: number;
   spotsPerFrame: number[];
-  /** Time spent on reading frames, ms, of all the time spent. */
+  /** Time spent waiting for frames that were not read yet, ms, of all the time spent. */
   readingMs: number;
   tookMs: number;
 }

@@ -1,7 +1,7 @@
 import { openStack } from '@/stacks/open-stack';
+import { readAhead } from '@/stacks/read-ahead';
 import { createDetector } from '@/tracking/detect';
 import { createSpotSink, encodeSpots } from '@/tracking/spots';
-import type { Frame } from '@/tracking/types';
 import { decodeImageModel } from '../encode-image-model';
 import { kernelsOfThisProcess } from '../kernels';
 import type { DetectChunkInput, DetectChunkOutput } from '../tasks';
@@ -32,15 +32,15 @@ export async function detectChunk(
   const spotsPerFrame: number[] = [];
   let readingMs = 0;
   try {
-    const room: Frame = { width: stack.width, height: stack.height, counts: new Float32Array(stack.width * stack.height) }; // prettier-ignore
-    for (let frame = firstFrame; frame < firstFrame + frames; frame++) {
-      const from = performance.now();
-      await stack.readFrame(frame, room);
+    let frame = firstFrame;
+    let from = performance.now();
+    for await (const picture of readAhead(stack, firstFrame, firstFrame + frames)) {
       readingMs += performance.now() - from;
       const before = sink.count;
-      detector.detect(room, frame, sink);
+      detector.detect(picture, frame++, sink);
       spotsPerFrame.push(sink.count - before);
-      onProgress((frame - firstFrame + 1) / frames);
+      onProgress((frame - firstFrame) / frames);
+      from = performance.now();
     }
   } finally {
     await stack.close();
