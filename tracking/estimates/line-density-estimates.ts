@@ -4,6 +4,7 @@ import { combine } from './combine';
 import { crossingsEstimate } from './crossings';
 import { withoutTracers, type EstimateContext } from './context';
 import type { Estimate, EstimateMethod } from './estimate';
+import { decayEstimate } from './decay';
 import { findFellows } from './fellows';
 import { heatFluxPrior } from './heat-flux-prior';
 import { asEstimates, notUsable, type DensityResult } from './interval';
@@ -20,6 +21,7 @@ const BY_TRACERS: readonly [EstimateMethod, (context: EstimateContext) => Densit
   ['neighbour-distance', neighbourDistanceEstimate],
   ['beads-per-length', beadsPerLength],
   ['line-velocity', lineVelocityEstimate],
+  ['decay', decayEstimate],
 ];
 
 export interface LineDensityEstimates {
@@ -49,6 +51,8 @@ export function lineDensityEstimates(
   const results: DensityResult[] = refusal
     ? BY_TRACERS.map(([method]) => notUsable(method, refusal))
     : measured();
+  results.push(notUsable('free-path', 'No capture of a free tracer is told from its track.'));
+  results.push(notUsable('marked-chains', 'No chain of tracers was marked by a person.'));
   results.push(heatFluxPrior(conditions));
   results.push(combine(results));
   return { estimates: results.flatMap(asEstimates), line: groups.line };

@@ -65,6 +65,9 @@ const METHODS = [
   'neighbour-distance',
   'beads-per-length',
   'line-velocity',
+  'decay',
+  'free-path',
+  'marked-chains',
   'heat-flux-prior',
   'combined',
 ];
