@@ -5,6 +5,14 @@ const SAMPLES = 20_000;
 /** About so many of those tell where the rounds start, which need not be exact. */
 const START_SAMPLES = 1000;
 const CLIP_SIGMAS = 2.5;
+/**
+ * Photons make more of far bright values than of far dark ones, so clipping lowers the mean: for a
+ * small skewness g, by g s c^3 p(c) / (3 - 6 c p(c)) of noise s at c widths, p the normal density
+ * (first term of Edgeworth's series, solved for the level at which the rounds end); g s is
+ * b / (b + r^2) for a background b and read variance r^2.
+ */
+const CLIP_DENSITY = Math.exp(-0.5 * CLIP_SIGMAS * CLIP_SIGMAS) / Math.sqrt(2 * Math.PI);
+const CLIPPED_SHARE = (CLIP_SIGMAS ** 3 * CLIP_DENSITY) / (3 - 6 * CLIP_SIGMAS * CLIP_DENSITY);
 const ROUNDS = 5;
 /** Below this mean background its brightness can't be told, only its offset. */
 const BACKGROUND_LEAST_E = 0.5;
@@ -92,7 +100,11 @@ export function levelOfSamples(samples: LightSamples, readVariance: number, sums
     else shift = (light - expected) / kept;
     if (scale === lastScale && shift === lastShift) break;
   }
-  return { scale, shift };
+  const level = Math.max(0, scale * start.meanBackground + shift);
+  const clipped = CLIPPED_SHARE * (level / Math.max(1e-9, level + readVariance));
+  return scaling
+    ? { scale: scale + clipped / start.meanBackground, shift }
+    : { scale, shift: shift + clipped };
 }
 
 /** Mean background, and median of electrons over background, of some of the samples. */

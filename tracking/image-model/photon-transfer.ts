@@ -1,5 +1,6 @@
 import type { RecipeRequest } from '../types';
 import type { BlockStatistics } from './block-statistics';
+import { fourthCumulant } from './fourth-cumulant';
 import { spatialNoise, temporalNoise, type NoiseBlocks } from './noise-blocks';
 import type { QuietPixels } from './quiet-pixels';
 
@@ -11,6 +12,8 @@ const OUTLIER_SIGMAS = 4;
 const LINE_ROUNDS = 4;
 /** A third moment below this many standard errors is none. */
 const THIRD_ERRORS_LEAST = 8;
+/** Nor a fourth cumulant. */
+const FOURTH_ERRORS_LEAST = 4;
 /** Noise below this share of the level is the rounding of 32-bit numbers, not of a camera. */
 const NOISE_SHARE_LEAST = 1e-6;
 
@@ -53,18 +56,18 @@ export function measureCameraNoise(
       readNoiseE: givenNoise ?? READ_NOISE_USUAL_E,
     };
   }
-  const { third, samples } = thirdMoment(statistics);
+  const moment = thirdMoment(statistics);
   const usualNoise = givenNoise || READ_NOISE_USUAL_E;
   const gain =
     givenGain ??
     lineSlope(blocks) ??
-    gainOfMoments(variance, third, samples, givenNoise ?? READ_NOISE_USUAL_E) ??
+    gainOfMoments(variance, moment, givenNoise ?? READ_NOISE_USUAL_E, quietPixels) ??
     Math.sqrt(variance) / usualNoise;
   const end = level - variance / gain;
   if (givenNoise !== undefined) {
     return { gainCountsPerE: gain, offsetCounts: end + gain * givenNoise ** 2, readNoiseE: givenNoise };
   }
-  const photons = third / gain ** 3;
+  const photons = moment.third / gain ** 3;
   const darkest = blocks.level.reduce((least, value) => Math.min(least, value), Infinity);
   const offset = Math.min(Math.max(level - gain * photons, end), Math.max(end, darkest));
   return {
@@ -118,26 +121,39 @@ function lineSlope({ level, variance, pairs }: NoiseBlocks): number | undefined 
 
 /**
  * Gain that makes both moments of an evenly lit background: variance = g^2 (m + r^2), third = g^3 m
- * for m photoelectrons. Of the two solutions the one in which photons outweigh read noise.
+ * for m photoelectrons. There are two: one in which photons outweigh read noise, one in which they
+ * don't. The fourth cumulant, g^4 m, says which, where it can be told from chance; else the first.
  */
 function gainOfMoments(
   variance: number,
-  third: number,
-  samples: number,
+  { third, samples }: { third: number; samples: number },
   readNoiseE: number,
+  quietPixels: QuietPixels,
 ): number | undefined {
   // The third moment of n normal values has the standard error sqrt(15 / n) variance^(3/2).
   if (!(third > THIRD_ERRORS_LEAST * Math.sqrt(15 / samples) * variance ** 1.5)) return undefined;
   const excess = (g: number) => variance / g ** 2 - third / g ** 3 - readNoiseE ** 2;
-  let low = third / variance;
-  let high = 1.5 * low;
-  if (excess(high) <= 0) return high;
+  const most = (1.5 * third) / variance;
+  if (excess(most) <= 0) return most;
+  const bright = rootBetween(excess, third / variance, most);
+  if (!(readNoiseE > 0)) return bright;
+  const dim = rootBetween(excess, Math.sqrt(variance) / readNoiseE, most);
+  const { fourth, samples: seen } = fourthCumulant(quietPixels);
+  if (!(fourth > FOURTH_ERRORS_LEAST * Math.sqrt(24 / seen) * variance ** 2)) return bright;
+  const between = Math.sqrt(bright * dim);
+  return fourth / third > between ? dim : bright;
+}
+
+/** By bisection, from a place where a function is negative and one where it is positive. */
+function rootBetween(f: (x: number) => number, negativeAt: number, positiveAt: number): number {
+  let below = negativeAt;
+  let above = positiveAt;
   for (let i = 0; i < 60; i++) {
-    const middle = 0.5 * (low + high);
-    if (excess(middle) < 0) low = middle;
-    else high = middle;
+    const middle = 0.5 * (below + above);
+    if (f(middle) < 0) below = middle;
+    else above = middle;
   }
-  return 0.5 * (low + high);
+  return 0.5 * (below + above);
 }
 
 /** Mean third power of quiet pixels about the background's level, counts^3. */

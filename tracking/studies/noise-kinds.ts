@@ -82,10 +82,10 @@ export function noiseFrame(kind: NoiseKind, frame: number, seed: number): Frame 
   const random = createRandom(mixSeed(seed, frame));
   const most = 2 ** bitDepth - 1;
   const counts = new Float32Array(light.length);
-  const hotEvery = hotShare > 0 ? Math.round(1 / hotShare) : Infinity;
+  const hotEvery = Math.round(1 / hotShare);
   for (let i = 0; i < counts.length; i++) {
     // Every so many pixels one is hot; a prime step spreads them over all columns.
-    const hot = (i * 7919) % hotEvery === 0 ? HOT_E : 0;
+    const hot = hotShare > 0 && (i * 7919) % hotEvery === 0 ? HOT_E : 0;
     const e = random.poisson(light[i] + hot) + readNoiseE * random.normal();
     counts[i] = Math.min(most, Math.max(0, Math.round(OFFSET_COUNTS + gainCountsPerE * e)));
   }
