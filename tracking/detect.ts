@@ -3,7 +3,7 @@ import { JOINT_SPOTS_MOST } from './detection/fit-work';
 import { createPlainSpotFits } from './detection/plain-spot-fits';
 import { createSpotKernel } from './detection/spot-kernel';
 import { SpotTable } from './detection/spot-table';
-import { levelForFalseMaxima } from './detection/threshold';
+import { gainForLevel, levelForFalseMaxima } from './detection/threshold';
 import { jointFitRoom } from './kernels/joint-fit-memory';
 import { createSimdSpotFits } from './kernels/joint-fit-simd';
 import type { Kernels } from './kernels/kernels';
@@ -139,6 +139,13 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
     fitter.setOffsetSpread(OFFSET_LEAST_E + OFFSET_SHARE * pictures.bare[y * width + x]);
   };
 
+  /** Twice the log-likelihood that noise at a spot's place gains as rarely as it exceeds the level. */
+  const gainForNoise = (i: number): number => {
+    const x = Math.max(0, Math.min(width - 1, Math.round(table.x[i])));
+    const y = Math.max(0, Math.min(height - 1, Math.round(table.y[i])));
+    return gainForLevel(level, sigma, pictures.bare[y * width + x], readVariance);
+  };
+
   const fitGroups = () => {
     const cell = Math.max(TOGETHER_SIGMAS * sigma, 2 * reach + 1);
     table.index(width, height, cell);
@@ -159,7 +166,7 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
       const count = gather(seed);
       setOffsetSpread(seed);
       // A lone faint maximum must gain the likelihood that the level stands for.
-      const aloneLeast = table.response[seed] > level + LEVEL_SURE ? 0 : level * level;
+      const aloneLeast = table.response[seed] > level + LEVEL_SURE ? 0 : gainForNoise(seed);
       fitter.fit(table, members, count, lookTwice, aloneLeast, gainLeast);
     }
     if (lookTwice) refitNextToOthers(cell);
