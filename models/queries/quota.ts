@@ -21,6 +21,18 @@ export async function quotaOf(labId: string, transaction?: Transaction): Promise
 }
 
 /**
+ * Bounds what one laboratory may keep, or takes its own bound away.
+ * @returns the bound that holds from now on; null when there is no such laboratory
+ */
+export async function setQuota(slug: string, bytes: number | null): Promise<number | null> {
+  const row = await selectRow<{ id: string }>(
+    'UPDATE labs SET quota_bytes = $2, updated_at = now() WHERE slug = $1 RETURNING id',
+    [slug, bytes],
+  );
+  return row && quotaOf(row.id);
+}
+
+/**
  * Whether so many more bytes fit. The laboratory's row stays locked until the transaction ends, so
  * that two uploads begun side by side can't both take the same room, in whatever process.
  * @throws LabError STORAGE_FULL

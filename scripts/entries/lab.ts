@@ -2,20 +2,26 @@ import { parseArgs } from 'node:util';
 import { z } from 'zod';
 import { baseUrl } from '@/lib/env';
 import { newId } from '@/lib/ids';
+import { formatBytes } from '@/lib/format/bytes';
 import { nameSchema } from '@/lib/schemas/text';
 import { makeInvitation } from '@/auth/invitations';
 import { invitationPath } from '@/lib/link-secret';
 import { closeDatabase, getSequelize } from '@/models/database';
 import { models } from '@/models';
+import { setQuota } from '@/models/queries/quota';
 import { selectRow } from '@/models/queries/select';
 import { writeAudit } from '@/models/queries/write-audit';
 import { BadArguments, runCommand } from '@/lib/command-line';
 
-const USAGE = 'Usage: npm run lab -- --name N --email E';
+const USAGE = 'Usage: npm run lab -- --name N --email E, or --name N --quota-gb G for one that is there';
 
 async function main(): Promise<void> {
-  const { values } = parseArgs({ options: { name: { type: 'string' }, email: { type: 'string' } } });
+  const text = { type: 'string' } as const;
+  const { values } = parseArgs({ options: { name: text, email: text, 'quota-gb': text } });
   const name = nameSchema.safeParse(values.name);
+  if (name.success && values['quota-gb'] !== undefined && values.email === undefined) {
+    return changeQuota(name.data, values['quota-gb']);
+  }
   const email = z.email().safeParse(values.email);
   if (!name.success || !email.success) throw new BadArguments(USAGE);
   const invitation = makeInvitation(new Date());
@@ -49,6 +55,16 @@ async function main(): Promise<void> {
   const path = isNew ? invitationPath(invitation.text) : '/sign-in';
   process.stdout.write(`${baseUrl()}${path}
 `);
+}
+
+/** Bounds what a laboratory may keep; 0 puts it back under the bound of all. */
+async function changeQuota(name: string, gigabytes: string): Promise<void> {
+  const bytes = /^\d+(\.\d+)?$/.test(gigabytes) ? Math.round(Number(gigabytes) * 1e9) : NaN;
+  if (!Number.isSafeInteger(bytes))
+    throw new BadArguments(`--quota-gb is a number of GB. Received '${gigabytes}'.`);
+  const quota = await setQuota(slugOf(name), bytes === 0 ? null : bytes);
+  if (quota === null) throw new BadArguments(`There is no laboratory named ${name}.`);
+  process.stdout.write(`${name} may keep ${formatBytes(quota)}.\n`);
 }
 
 /** `Vortex Lab, Turku` becomes `vortex-lab-turku`. */

@@ -81,4 +81,14 @@ describe('the lab command', () => {
     expect((await run('lab', '--name', 'vortex lab åbo', '--email', 'x@abo.test')).code).toBe(2);
     expect((await run('lab', '--name', 'New', '--email', 'no e-mail')).code).toBe(2);
   });
+
+  it('bounds what one laboratory may keep, and puts it back under the bound of all', async () => {
+    const quota = async () => (await models().Lab.findOne({ where: { slug: 'vortex-lab-abo' } }))?.quotaBytes;
+    const { stdout } = await run('lab', '--name', 'Vortex Lab, Åbo', '--quota-gb', '2.5');
+    expect([stdout, await quota()]).toEqual(['Vortex Lab, Åbo may keep 2.50 GB.\n', '2500000000']);
+    expect((await run('lab', '--name', 'Vortex Lab, Åbo', '--quota-gb', '0')).stdout).toContain('5.00 TB');
+    expect(await quota()).toBeNull();
+    expect((await run('lab', '--name', 'Nowhere', '--quota-gb', '1')).code).toBe(2);
+    expect((await run('lab', '--name', 'Vortex Lab, Åbo', '--quota-gb', 'much')).code).toBe(2);
+  });
 });
