@@ -1,12 +1,15 @@
 import { FOUND_WITHIN_PX, ISOLATED_PX } from '../assess';
 import type { Scene } from '../simulate/scene';
 import { SPOT_OVERLAP } from '../types';
-import type { TimedPoints } from './frame-order';
+import { firstFrom, orderByFrame, type TimedPoints } from './frame-order';
 import { matchPoints, nearestNeighbourPx } from './point-match';
 import type { TrueSpots } from './true-spots';
 
 /** Upper ends of the ranges of distance to the nearest other tracer, px. */
 export const NEIGHBOUR_RANGES_PX = [1, 2, 3, 4, 5, 6, 10, Infinity] as const;
+
+/** Nearer than this to a found one, a tracer that was not found shares its spot: 2.5 spot sizes. */
+const UNRESOLVED_PX = 3;
 
 /** Single spots or points of tracks, with their standard errors (NaN where none are stated) and flags. */
 export interface FoundSpots extends TimedPoints {
@@ -26,7 +29,12 @@ export interface SpotSums {
   errorY: number;
   boundX: number;
   boundY: number;
-  /** Found spots with and without the flag of overlap, and their squared errors over stated errors (both axes). */
+  /** Squared errors over stated errors (both axes) of the isolated ones above. */
+  isolatedResiduals: number;
+  /** The same of found spots that stand for two tracers, one of which was not found. */
+  unresolved: number;
+  unresolvedResiduals: number;
+  /** Of all other found spots without and with the flag of overlap. */
   lone: number;
   loneResiduals: number;
   overlapping: number;
@@ -45,6 +53,7 @@ export interface SpotSums {
 export function sumSpotErrors(scene: Scene, truth: TrueSpots, spots: FoundSpots, leastSnr: number): SpotSums {
   const partner = matchPoints(scene, spots, scene.frames, FOUND_WITHIN_PX);
   const nearest = nearestNeighbourPx(scene, scene.frames);
+  const standsForTwo = unresolvedPoints(scene, partner);
   const sums = noSpots();
   sums.truePoints = partner.length;
   sums.spots = spots.frame.length;
@@ -58,7 +67,10 @@ export function sumSpotErrors(scene: Scene, truth: TrueSpots, spots: FoundSpots,
     const dx = spots.xPx[j] - scene.xPx[i];
     const dy = spots.yPx[j] - scene.yPx[i];
     const residuals = (dx / spots.sxPx[j]) ** 2 + (dy / spots.syPx[j]) ** 2;
-    if (spots.flags[j] & SPOT_OVERLAP) {
+    if (standsForTwo(i)) {
+      sums.unresolved++;
+      sums.unresolvedResiduals += residuals;
+    } else if (spots.flags[j] & SPOT_OVERLAP) {
       sums.overlapping++;
       sums.overlappingResiduals += residuals;
     } else {
@@ -68,12 +80,32 @@ export function sumSpotErrors(scene: Scene, truth: TrueSpots, spots: FoundSpots,
     if (!(nearest[i] > ISOLATED_PX) || truth.snr(i) < leastSnr) continue;
     const bound = truth.bound(i);
     sums.isolated++;
+    sums.isolatedResiduals += residuals;
     sums.errorX += dx * dx;
     sums.errorY += dy * dy;
     sums.boundX += bound.sxPx * bound.sxPx;
     sums.boundY += bound.syPx * bound.syPx;
   }
   return sums;
+}
+
+/** Which points have another one near them that was not found: their light was taken for a single spot. */
+function unresolvedPoints(scene: Scene, partner: Int32Array): (point: number) => boolean {
+  const missed = Array.from(partner.keys()).filter((i) => partner[i] < 0);
+  const pick = (from: ArrayLike<number>) => missed.map((i) => from[i]);
+  const order = orderByFrame(
+    { frame: pick(scene.frame), xPx: pick(scene.xPx), yPx: pick(scene.yPx) },
+    scene.frames,
+  );
+  return (i) => {
+    const x = scene.xPx[i];
+    const end = order.start[scene.frame[i] + 1];
+    for (let k = firstFrom(order, scene.frame[i], x - UNRESOLVED_PX); k < end; k++) {
+      if (order.xPx[k] > x + UNRESOLVED_PX) return false;
+      if (Math.hypot(order.xPx[k] - x, order.yPx[k] - scene.yPx[i]) <= UNRESOLVED_PX) return true;
+    }
+    return false;
+  };
 }
 
 function noSpots(): SpotSums {
@@ -87,6 +119,9 @@ function noSpots(): SpotSums {
     errorY: 0,
     boundX: 0,
     boundY: 0,
+    isolatedResiduals: 0,
+    unresolved: 0,
+    unresolvedResiduals: 0,
     lone: 0,
     loneResiduals: 0,
     overlapping: 0,
@@ -109,6 +144,9 @@ export function poolSpotSums(all: readonly SpotSums[]): SpotSums {
       errorY: added('errorY'),
       boundX: added('boundX'),
       boundY: added('boundY'),
+      isolatedResiduals: added('isolatedResiduals'),
+      unresolved: added('unresolved'),
+      unresolvedResiduals: added('unresolvedResiduals'),
       lone: added('lone'),
       loneResiduals: added('loneResiduals'),
       overlapping: added('overlapping'),
@@ -125,8 +163,11 @@ export interface SpotFigures {
   isolated: number;
   /** Root mean square error over Cramer-Rao bound, the larger of the two axes. */
   rmsOverBound: number;
-  /** Root mean square of error over stated error; 1 where errors are honest. By the flag of overlap. */
+  /** Root mean square of error over stated error, 1 where errors are honest: of all found spots; of the isolated ones. */
   residualRms: number;
+  isolatedResidualRms: number;
+  /** Share of found spots that stand for two tracers, whose errors have no meaning; of the others, by the flag of overlap. */
+  unresolvedShare: number;
   loneResidualRms: number;
   overlappingResidualRms: number;
   overlappingShare: number;
@@ -146,7 +187,9 @@ export function spotFigures(sums: SpotSums): SpotFigures {
   return {
     isolated: sums.isolated,
     rmsOverBound: Math.sqrt(Math.max(sums.errorX / sums.boundX, sums.errorY / sums.boundY)),
-    residualRms: rms(sums.loneResiduals + sums.overlappingResiduals, sums.matched),
+    residualRms: rms(sums.loneResiduals + sums.overlappingResiduals + sums.unresolvedResiduals, sums.matched),
+    isolatedResidualRms: rms(sums.isolatedResiduals, sums.isolated),
+    unresolvedShare: sums.unresolved / sums.matched,
     loneResidualRms: rms(sums.loneResiduals, sums.lone),
     overlappingResidualRms: rms(sums.overlappingResiduals, sums.overlapping),
     overlappingShare: sums.overlapping / sums.matched,

@@ -102,6 +102,7 @@ const honest = (rms: number) => Math.abs(rms - 1) - MIXED_GOALS.residualRmsOff;
 const MIXED_MISSES = {
   rmsOverBound: (f) => f.rmsOverBound - MIXED_GOALS.rmsOverBoundMost,
   residualRms: (f) => honest(f.residualRms),
+  isolatedResidualRms: (f) => honest(f.isolatedResidualRms),
   loneResidualRms: (f) => honest(f.loneResidualRms),
   overlappingResidualRms: (f) => honest(f.overlappingResidualRms),
   precision: (f) => MIXED_GOALS.precisionLeast - f.precision,

@@ -66,3 +66,25 @@ test('a point at the least SNR asked for counts, one below it does not', () => {
   expectWithin(exact.snr(0), 4, { abs: 1e-3 });
   expect(brightnessOfSnr(4, 20, 1.5, 1.2)).toBeGreaterThan(same.brightnessE[0] * 0.99);
 });
+
+test('a spot between two tracers of which one was missed is not held against stated errors', () => {
+  const pair = {
+    ...scene,
+    frames: 1,
+    frame: Uint32Array.of(0, 0, 0),
+    xPx: Float32Array.of(100, 102, 200),
+    yPx: Float32Array.of(100, 100, 200),
+    brightnessE: Float32Array.of(500, 500, 500),
+  };
+  const spots = emptySpots(2);
+  spots.xPx.set([101, 200.1]);
+  spots.yPx.set([100, 199.9]);
+  spots.sxPx.fill(0.1);
+  spots.syPx.fill(0.1);
+  const figures = spotFigures(sumSpotErrors(pair, lookAtTruth(pair, camera), spots, 0));
+  expect(figures.unresolvedShare).toBe(0.5);
+  expectWithin(figures.loneResidualRms, 1, { abs: 1e-3 });
+  expectWithin(figures.isolatedResidualRms, 1, { abs: 1e-3 });
+  // Of four errors along an axis one is ten stated ones, two are one and one is none.
+  expectWithin(figures.residualRms, Math.sqrt((100 + 1 + 1) / 4), { abs: 1e-2 });
+});
