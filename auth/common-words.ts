@@ -1,6 +1,6 @@
 /**
- * Words that guessers try first, beside the ones of our field. Passwords are long, so what counts
- * is how much is left of one when these are taken out.
+ * Words that guessers of our passwords try first, beside the common ones of everybody: of the product, the field and its
+ * people.
  */
 export const COMMON_WORDS =
   `password passwort passphrase pass1234 letmein welcome admin administrator login secret default changeme
@@ -10,7 +10,7 @@ export const COMMON_WORDS =
   internet server database correct horse battery staple hello world google test user guest root temp
   beadline helium superfluid vortex quantum tracer cryostat laboratory physics science research university
   experiment annotator analyst principal investigator experimentalist microscope camera recording tangle
-  temperature laser liquid lambda reconnection velocity particle abcd abcdef 12345678 1234567 123456 12345
+  temperature laser liquid lambda line lines turbulence turbulent counterflow cooldown dewar reconnection velocity particle abcd abcdef 12345678 1234567 123456 12345
   1234 0000 1111 2024 2025 2026 please open enter access private account online mypassword thisismy`.split(
     /\s+/,
   );
