@@ -8,6 +8,7 @@
 export function findPeaks(response: usize, width: i32, height: i32, level: f32, peaks: usize): i32 {
   const levels = f32x4.splat(level);
   const first = peaks;
+  const stride = (<usize>width) << 2;
   for (let y = 0; y < height; y++) {
     const row = response + ((<usize>y * <usize>width) << 2);
     let x = 0;
@@ -19,12 +20,13 @@ export function findPeaks(response: usize, width: i32, height: i32, level: f32, 
       const d = f32x4.ge(v128.load(at, 48), levels);
       // Nearly always nothing in 16 pixels is bright enough.
       if (!v128.any_true(v128.or(v128.or(a, b), v128.or(c, d)))) continue;
-      let bright = i32x4.bitmask(a) | (i32x4.bitmask(b) << 4) | (i32x4.bitmask(c) << 8);
-      bright |= i32x4.bitmask(d) << 12;
-      while (bright) {
-        const here = x + ctz(bright);
-        bright &= bright - 1;
-        if (!isPeak(response, width, height, here, y)) continue;
+      const inside = y > 0 && y < height - 1 && x > 0 && x + 16 < width;
+      let found = bits(a, at, stride, inside) | (bits(b, at + 16, stride, inside) << 4);
+      found |= (bits(c, at + 32, stride, inside) << 8) | (bits(d, at + 48, stride, inside) << 12);
+      while (found) {
+        const here = x + ctz(found);
+        found &= found - 1;
+        if (!inside && !isPeak(response, width, height, here, y)) continue;
         store<i32>(peaks, y * width + here);
         peaks += 4;
       }
@@ -38,6 +40,24 @@ export function findPeaks(response: usize, width: i32, height: i32, level: f32, 
   return <i32>((peaks - first) >> 2);
 }
 
+/** Which of 4 pixels are bright and, when they have all their neighbours, peaks. */
+function bits(bright: v128, at: usize, stride: usize, inside: bool): i32 {
+  if (!inside || !v128.any_true(bright)) return i32x4.bitmask(bright);
+  const value = v128.load(at);
+  const up = at - stride;
+  const down = at + stride;
+  const before = v128.and(
+    v128.and(f32x4.gt(value, v128.load(at - 4)), f32x4.gt(value, v128.load(up - 4))),
+    v128.and(f32x4.gt(value, v128.load(up)), f32x4.gt(value, v128.load(up + 4))),
+  );
+  const after = v128.and(
+    v128.and(f32x4.ge(value, v128.load(at + 4)), f32x4.ge(value, v128.load(down - 4))),
+    v128.and(f32x4.ge(value, v128.load(down)), f32x4.ge(value, v128.load(down + 4))),
+  );
+  return i32x4.bitmask(v128.and(bright, v128.and(before, after)));
+}
+
+/** As `bits`, for one bright pixel that may stand at the border. */
 function isPeak(response: usize, width: i32, height: i32, x: i32, y: i32): bool {
   const stride = (<usize>width) << 2;
   const at = response + ((<usize>y * <usize>width + <usize>x) << 2);
