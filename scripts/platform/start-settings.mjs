@@ -14,6 +14,12 @@ export function readStartSettings(env) {
   const databaseUrl = env.DATABASE_URL || null;
   if (databaseUrl && !/^postgres(ql)?:\/\//.test(databaseUrl))
     throw new PlainStop('DATABASE_URL must begin with postgres:// or postgresql://.', 2);
+  const smtpUrl = env.BEADLINE_SMTP_URL?.trim();
+  // Said now rather than by the first mail that does not leave; without the value, which holds a password.
+  if (smtpUrl && !/^smtps?:\/\/[^/]/.test(smtpUrl))
+    throw new PlainStop('BEADLINE_SMTP_URL must begin with smtp:// or smtps:// and name a host.', 2);
+  if (smtpUrl && !env.BEADLINE_MAIL_FROM?.includes('@'))
+    throw new PlainStop('BEADLINE_SMTP_URL is set: name the sender of mail in BEADLINE_MAIL_FROM.', 2);
   return {
     port,
     url: `http://127.0.0.1:${port}`,
