@@ -8,6 +8,10 @@ import { TracerFilter } from './tracer-filter';
 
 /** Explanations kept from frame to frame. */
 const KEPT = 16;
+/** Explanations so much (-2 ln likelihood) behind the best one never catch up. */
+const HOPELESS = 40;
+/** Slots of the explanations of one frame; those of the next one lie in the other bank. */
+const BANK = 2 * KEPT;
 /** Variance of where a tracer is in a spot that it shares with another one, spot sizes squared. */
 const MERGED_VARIANCE = 0.4;
 const NONE = -1;
@@ -25,8 +29,9 @@ const FRESH_B = 8;
 export class PairHypotheses {
   private readonly forward: PairFilter;
   private readonly backward: TracerFilter;
-  /** Slots 2 h and 2 h + 1 hold tracers A and B of explanation h; those of the next frame lie behind. */
-  private readonly alive = new Uint8Array(4 * KEPT + 2);
+  /** Slots now + 2 h and now + 2 h + 1 hold tracers A and B of explanation h. */
+  private now = 0;
+  private readonly alive = new Uint8Array(2 * BANK + 1);
   private cost = new Float64Array(KEPT);
   private nextCost = new Float64Array(KEPT);
   private readonly candidateCost = new Float64Array(3 * KEPT);
@@ -44,7 +49,7 @@ export class PairHypotheses {
     brightness: BrightnessStatistics,
     private readonly spotSizePx: number,
   ) {
-    this.forward = new PairFilter(motion, brightness, table, 1, 4 * KEPT + 2);
+    this.forward = new PairFilter(motion, brightness, table, 1, 2 * BANK + 1);
     this.backward = new TracerFilter(motion, brightness, table, -1, 2);
   }
 
@@ -70,6 +75,7 @@ export class PairHypotheses {
     }
     if (spots === 0 && (headA < 0 || headB < 0) && (tailA < 0 || tailB < 0)) return;
 
+    this.now = 0;
     this.alive[0] = this.readHead(0, headA, from);
     this.alive[1] = this.readHead(1, headB, from);
     this.cost[0] = 0;
@@ -79,24 +85,17 @@ export class PairHypotheses {
     if (tailB >= 0) readTrack(this.backward, 1, this.table, this.after, tailB);
     let best = 0;
     let bestCost = Infinity;
-    let bestCrossed = false;
+    let crossed = false;
     for (let h = 0; h < kept; h++) {
-      const straight =
-        this.cost[h] + this.tailCost(2 * h, tailA, 0, to) + this.tailCost(2 * h + 1, tailB, 1, to);
-      const crossed =
-        this.cost[h] + this.tailCost(2 * h, tailB, 1, to) + this.tailCost(2 * h + 1, tailA, 0, to);
-      if (straight < bestCost) {
-        best = h;
-        bestCost = straight;
-        bestCrossed = false;
-      }
-      if (crossed < bestCost) {
-        best = h;
-        bestCost = crossed;
-        bestCrossed = true;
-      }
+      const A = this.now + 2 * h;
+      const straight = this.cost[h] + this.tailCost(A, tailA, 0, to) + this.tailCost(A + 1, tailB, 1, to);
+      const other = this.cost[h] + this.tailCost(A, tailB, 1, to) + this.tailCost(A + 1, tailA, 0, to);
+      if (Math.min(straight, other) >= bestCost) continue;
+      best = h;
+      bestCost = Math.min(straight, other);
+      crossed = other < straight;
     }
-    this.relink(headA, headB, tailA, tailB, frames, best, bestCrossed, to);
+    this.relink(headA, headB, tailA, tailB, frames, best, crossed, to);
   }
 
   /** Last spot of the track of `s` before a frame, or -1. */
@@ -136,65 +135,65 @@ export class PairHypotheses {
 
   /** One frame of all explanations; returns how many are kept. */
   private step(k: number, kept: number, frame: number): number {
-    const { forward, alive, spotA, spotB, candidate, candidateCost } = this;
-    const a = spotA[k];
-    const b = spotB[k];
+    const { forward, alive, candidate, candidateCost } = this;
+    const a = this.spotA[k];
+    const b = this.spotB[k];
     let count = 0;
     for (let h = 0; h < kept; h++) {
-      for (let i = 2 * h; i < 2 * h + 2; i++) if (alive[i]) forward.predict(i);
-      const A = 2 * h;
+      const A = this.now + 2 * h;
       const B = A + 1;
-      const straight = this.takeCost(A, a) + this.takeCost(B, b);
-      candidateCost[count] = this.cost[h] + straight;
-      candidate[count++] = 16 * h + this.fresh(A, a, B, b);
+      const cost = this.cost[h];
+      if (alive[A]) forward.predict(A);
+      if (alive[B]) forward.predict(B);
+      const aToA = this.takeCost(A, a);
+      const bToB = this.takeCost(B, b);
+      candidateCost[count] = cost + aToA + bToB;
+      candidate[count++] = 16 * h + fresh(a, aToA, b, bToB);
       if (a < 0 && b < 0) continue;
-      candidateCost[count] = this.cost[h] + this.takeCost(A, b) + this.takeCost(B, a);
-      candidate[count++] = 16 * h + CROSSED + this.fresh(A, b, B, a);
+      const bToA = this.takeCost(A, b);
+      const aToB = this.takeCost(B, a);
+      candidateCost[count] = cost + bToA + aToB;
+      candidate[count++] = 16 * h + CROSSED + fresh(b, bToA, a, aToB);
       if ((a >= 0 && b >= 0) || !alive[A] || !alive[B]) continue;
       const lone = a >= 0 ? a : b;
       const ownerA = this.ownsMerged(A, B, lone);
       const owner = ownerA ? A : B;
       if (!this.mayTake(owner, lone)) continue;
-      candidateCost[count] = this.cost[h] + forward.mergedCost(owner, ownerA ? B : A, lone, this.spotSizePx);
+      candidateCost[count] = cost + forward.mergedCost(owner, ownerA ? B : A, lone, this.spotSizePx);
       candidate[count++] = 16 * h + MERGED + (ownerA === a >= 0 ? 0 : CROSSED);
     }
-    const keep = Math.min(KEPT, count);
-    for (let n = 0; n < keep; n++) {
-      let least = n;
-      for (let m = n + 1; m < count; m++) if (candidateCost[m] < candidateCost[least]) least = m;
-      // The order of those passed over stays, so that the first of equals is kept.
+    let keep = 0;
+    for (; keep < KEPT && keep < count; keep++) {
+      let least = keep;
+      for (let m = keep + 1; m < count; m++) if (candidateCost[m] < candidateCost[least]) least = m;
       const cost = candidateCost[least];
+      if (keep > 0 && cost > this.nextCost[0] + HOPELESS) break;
       const chosen = candidate[least];
-      for (let m = least; m > n; m--) {
+      // The order of those passed over stays, so that the first of equals is kept.
+      for (let m = least; m > keep; m--) {
         candidateCost[m] = candidateCost[m - 1];
         candidate[m] = candidate[m - 1];
       }
-      candidateCost[n] = cost;
-      candidate[n] = chosen;
-      this.apply(n, a, b, frame);
-      this.nextCost[n] = cost;
-      this.history[k * KEPT + n] = chosen;
+      this.apply(chosen, keep, a, b, frame);
+      this.nextCost[keep] = cost;
+      this.history[k * KEPT + keep] = chosen;
     }
-    for (let i = 0; i < 2 * keep; i++) {
-      forward.copy(2 * KEPT + i, i);
-      alive[i] = alive[2 * KEPT + i];
-    }
+    this.now = BANK - this.now;
     const swap = this.cost;
     this.cost = this.nextCost;
     this.nextCost = swap;
     return keep;
   }
 
-  /** Makes the state of the n-th candidate, in the n-th place behind. */
-  private apply(n: number, a: number, b: number, frame: number): void {
+  /** Makes the state that a choice leads to, as the n-th of the next frame. */
+  private apply(chosen: number, n: number, a: number, b: number, frame: number): void {
     const { forward, alive } = this;
-    const h = this.candidate[n] >> 4;
-    const does = this.candidate[n] & 15;
-    const first = 2 * KEPT + 2 * n;
+    const does = chosen & 15;
+    const from = this.now + 2 * (chosen >> 4);
+    const first = BANK - this.now + 2 * n;
     for (let side = 0; side < 2; side++) {
-      const from = 2 * h + side;
-      if (this.alive[from]) forward.copy(from, first + side);
-      alive[first + side] = alive[from];
+      if (alive[from + side]) forward.copy(from + side, first + side);
+      alive[first + side] = alive[from + side];
     }
     if ((does & MERGED) !== 0) {
       const lone = a >= 0 ? a : b;
@@ -250,17 +249,11 @@ export class PairHypotheses {
     return Math.min(0, this.forward.cost(i, s));
   }
 
-  private fresh(i: number, s: number, j: number, t: number): number {
-    return (
-      (s >= 0 && this.takeCost(i, s) >= 0 ? FRESH_A : 0) + (t >= 0 && this.takeCost(j, t) >= 0 ? FRESH_B : 0)
-    );
-  }
-
   /** Cost of the piece behind spot `tail` (in slot `j`) continuing tracer `i`; 0 where it does not. */
   private tailCost(i: number, tail: number, j: number, to: number): number {
     const { forward, table } = this;
     if (tail < 0 || !this.alive[i] || !this.mayTake(i, tail)) return 0;
-    const scratch = 4 * KEPT;
+    const scratch = 2 * BANK;
     forward.copy(i, scratch);
     for (let f = to + 1; f <= table.frame[tail]; f++) {
       forward.predict(scratch);
@@ -281,8 +274,8 @@ export class PairHypotheses {
     to: number,
   ): void {
     const { after, before, spotA, spotB } = this;
-    const endA = this.tailCost(2 * best, crossed ? tailB : tailA, crossed ? 1 : 0, to) < 0;
-    const endB = this.tailCost(2 * best + 1, crossed ? tailA : tailB, crossed ? 0 : 1, to) < 0;
+    const endA = this.tailCost(this.now + 2 * best, crossed ? tailB : tailA, crossed ? 1 : 0, to) < 0;
+    const endB = this.tailCost(this.now + 2 * best + 1, crossed ? tailA : tailB, crossed ? 0 : 1, to) < 0;
     const path = new Int32Array(frames);
     for (let k = frames - 1, h = best; k >= 0; k--) {
       path[k] = this.history[k * KEPT + h];
@@ -319,4 +312,9 @@ export class PairHypotheses {
     this.before[tail] = joined ? last : NONE;
     if (joined) this.after[last] = tail;
   }
+}
+
+/** Marks of spots at which a tracer starts anew, those that cost nothing to take. */
+function fresh(toA: number, costA: number, toB: number, costB: number): number {
+  return (toA >= 0 && costA >= 0 ? FRESH_A : 0) + (toB >= 0 && costB >= 0 ? FRESH_B : 0);
 }

@@ -81,7 +81,8 @@ export class TracerFilter {
   }
 
   copy(from: number, to: number): void {
-    this.values.copyWithin(STRIDE * to, STRIDE * from, STRIDE * (from + 1));
+    const { values } = this;
+    for (let k = 0; k < STRIDE; k++) values[STRIDE * to + k] = values[STRIDE * from + k];
     this.spot[to] = this.spot[from];
     this.missed[to] = this.missed[from];
   }

@@ -8,7 +8,7 @@ import type { SpotTable } from './spot-table';
 /** Tracks nearer than this many spot sizes may have been taken for each other. */
 const NEAR_SIZES = 3.5;
 /** Frames before and after an approach that are decided anew with it. */
-const MARGIN_FRAMES = 1;
+const MARGIN_FRAMES = 2;
 
 /**
  * Decides anew, for each approach of two tracks, which spots near it belong to which of them and
