@@ -37,6 +37,7 @@ const PAGES: Partial<Record<Role, string[]>> = {
     '/recordings/RECORDING/try',
     '/analyses',
     '/analyses/ANALYSIS',
+    '/compare',
     '/account',
     '/nowhere',
   ],
@@ -137,7 +138,7 @@ describe.each(THEMES)('every page in the %s theme', (theme) => {
   );
 
   it('says what to do where there is nothing yet', async () => {
-    const pages = ['/', '/campaigns', '/analyses', '/lab/tokens'];
+    const pages = ['/', '/campaigns', '/analyses', '/compare', '/lab/tokens'];
     await look(empty, 'principal_investigator', pages, theme, 'wide', 'empty');
   }, 60_000);
 
