@@ -2,11 +2,14 @@ import { dropOldKeys } from '@/auth/idempotency';
 import { log } from '@/auth/log';
 import { dropOldWindows } from '@/auth/rate-limit';
 import { askForNightlyChecks } from '@/jobs/check-files';
+import { dropKeptMail } from '@/jobs/mail/keep-mail';
 import { limit } from '@/lib/env';
 import { dropOldMails } from '@/models/queries/mails';
 import { forgetEmptyFolders, reconcileUploads } from './uploads/reconcile-uploads';
 
 const EVERY_MS = 3_600_000;
+/** Mail is shown for so long. */
+const MAIL_DAYS = 90;
 /** After a failure, as while the database is away. */
 const AGAIN_MS = 15_000;
 
@@ -22,7 +25,8 @@ export function startHousekeeping(): void {
       await forgetEmptyFolders();
       await dropOldWindows();
       await dropOldKeys();
-      await dropOldMails();
+      await dropOldMails(MAIL_DAYS);
+      await dropKeptMail(MAIL_DAYS);
       await askForNightlyChecks(new Date(), limit('nightlyCheckBytes'));
     } catch (err) {
       log.warn({ err }, 'housekeeping failed, tried again soon');

@@ -1,4 +1,4 @@
-import { mkdir, open, rename } from 'node:fs/promises';
+import { mkdir, open, readdir, rename, rm, stat } from 'node:fs/promises';
 import { join } from 'node:path';
 import { dataDir } from '@/lib/env';
 
@@ -19,4 +19,18 @@ export async function keepMail(mailId: string, message: Buffer): Promise<void> {
     await file.close();
   }
   await rename(`${path}.part`, path);
+}
+
+/** Removes kept mail that is older than so many days. @returns how many */
+export async function dropKeptMail(olderThanDays: number, now = new Date()): Promise<number> {
+  const names = await readdir(mailFolder()).catch(() => []);
+  let dropped = 0;
+  for (const path of names.map((name) => join(mailFolder(), name))) {
+    // Another web server may clear up at the same moment.
+    const file = await stat(path).catch(() => null);
+    if (!file || now.getTime() - file.mtimeMs < olderThanDays * 86_400_000) continue;
+    await rm(path, { force: true });
+    dropped++;
+  }
+  return dropped;
 }

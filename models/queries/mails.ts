@@ -196,8 +196,11 @@ export async function getMail(labId: string, id: string): Promise<MailView> {
   };
 }
 
-/** Forgets mail that nobody looks for any more. */
-export async function dropOldMails(): Promise<void> {
-  await execute(`DELETE FROM mails WHERE state <> 'waiting' AND created_at < now() - interval '90 days'`);
+/** Forgets mail that nobody looks for any more, and links that have ended. */
+export async function dropOldMails(olderThanDays: number): Promise<void> {
+  await execute(
+    `DELETE FROM mails WHERE state <> 'waiting' AND created_at < now() - make_interval(days => $1)`,
+    [olderThanDays],
+  );
   await execute(`DELETE FROM account_links WHERE expires_at < now() - interval '1 day'`);
 }

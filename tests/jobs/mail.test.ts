@@ -3,6 +3,7 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterAll, afterEach, beforeAll, beforeEach, describe, expect, it } from 'vitest';
 import { closeDoorbell } from '@/jobs/doorbell';
+import { dropKeptMail } from '@/jobs/mail/keep-mail';
 import { HANDLERS } from '@/jobs/registry';
 import { askForAccountMail, askForMail, mailPauseMs, sendMailJob } from '@/jobs/send-mail';
 import { giveUpAnalysis, tellOfAnalysis } from '@/jobs/tell-of-analysis';
@@ -13,6 +14,7 @@ import type { MailOrder } from '@/lib/mail/mail-kinds';
 import { models } from '@/models';
 import { findLinkOwner } from '@/models/queries/account-links';
 import { addMember } from '@/models/queries/invite-member';
+import { dropOldMails } from '@/models/queries/mails';
 import { execute, selectRow, selectRows } from '@/models/queries/select';
 import { freshDatabase, type FreshDatabase } from '../helpers/fresh-database';
 import { makeAnalysis, makeLab, makeRecording, makeRun, type LabRows } from '../helpers/lab-rows';
@@ -112,6 +114,26 @@ describe('without a mail server', () => {
     expect(raw).toContain('Content-Type: text/plain');
     expect(raw).toContain('Content-Type: text/html');
     expect(readdirSync(join(folder, 'mail'))).toEqual([`${mail.id}.eml`]);
+  });
+
+  it('is forgotten after its days, table and file alike, but never while it waits', async () => {
+    await ask(failed);
+    await work();
+    const { id } = await mailIn('kept');
+    await stopWorkers();
+    await ask(failed);
+    const days = (count: number) => new Date(Date.now() + count * 86_400_000);
+    expect(await dropKeptMail(90, days(89))).toBe(0);
+    expect(await dropKeptMail(90, days(91))).toBe(1);
+    expect(readdirSync(join(folder, 'mail'))).toEqual([]);
+    await dropOldMails(90);
+    expect(await mailsOf()).toHaveLength(2);
+    await execute(`UPDATE mails SET created_at = now() - interval '91 days' WHERE user_id = $1`, [
+      lab.userId,
+    ]);
+    await dropOldMails(90);
+    const left = await mailsOf();
+    expect([left.length, left[0].state, left[0].id === id]).toEqual([1, 'waiting', false]);
   });
 
   it('is sent only if what it tells of becomes true', async () => {
