@@ -11,17 +11,19 @@ export function expectedFalseMaxima(u: number, spotSigmaPx: number, pixels: numb
  * Of the maxima that the formula promises, detection finds a share: it starts from whole pixels,
  * between which small spots slip through, and its fit takes part of a maximum for background.
  * By spot size, px: the share at u = 3.5, and by how much its logarithm falls per unit of u.
- * Simulated: frames of 256 x 256 px of independent normal noise, spots counted as the detector
- * reports them, 250 to 600 for each of 3 levels (2 to 1000 spots per megapixel) and 11 sizes.
+ * Simulated: frames of 256 x 256 px of 20 electrons and 1.5 electrons of read noise, known to the
+ * detector; spots counted as it reports them, 250 to 600 for each of 11 sizes and 3 levels (8, 60
+ * and 400 maxima per megapixel, u = 2.8 to 4.5), so that each share is known to 5 %.
  */
 const FOUND_SHARES: readonly [spotSigmaPx: number, share: number, fall: number][] = [
-  [0.5, 0.5, 0.37],
-  [0.7, 0.58, 0.4],
-  [0.85, 0.75, 0.2],
-  [1.2, 0.84, 0.24],
-  [2, 0.89, 0.22],
-  [2.5, 0.9, 0.17],
-  [3.5, 1, 0],
+  [0.5, 0.55, 0.1],
+  [0.7, 0.61, 0.12],
+  [0.85, 0.79, 0.08],
+  [1, 0.8, 0.08],
+  [1.2, 0.9, 0.1],
+  [1.5, 0.93, 0.14],
+  [2.5, 0.94, 0.14],
+  [3.5, 1, 0.05],
 ];
 
 /** Expected number of spots that detection at level `u` finds in an image of noise. */

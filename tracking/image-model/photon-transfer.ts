@@ -57,12 +57,14 @@ export function measureCameraNoise(
     };
   }
   const moment = thirdMoment(statistics);
-  const usualNoise = givenNoise || READ_NOISE_USUAL_E;
   const gain =
     givenGain ??
     lineSlope(blocks) ??
-    gainOfMoments(variance, moment, givenNoise ?? READ_NOISE_USUAL_E, quietPixels) ??
-    Math.sqrt(variance) / usualNoise;
+    gainOfMoments(variance, moment, givenNoise ?? READ_NOISE_USUAL_E, quietPixels);
+  if (gain === undefined) {
+    const readNoiseE = givenNoise || READ_NOISE_USUAL_E;
+    return { gainCountsPerE: Math.sqrt(variance) / readNoiseE, offsetCounts: level, readNoiseE };
+  }
   const end = level - variance / gain;
   if (givenNoise !== undefined) {
     return { gainCountsPerE: gain, offsetCounts: end + gain * givenNoise ** 2, readNoiseE: givenNoise };
