@@ -35,8 +35,9 @@ export class Arena {
     try {
       this.memory.grow(Math.ceil(missing / PAGE_BYTES));
       return true;
-    } catch {
-      return false;
+    } catch (cause) {
+      if (cause instanceof RangeError) return false;
+      throw cause;
     }
   }
 

@@ -4,14 +4,14 @@ import { Arena } from './arena';
 import type { FrameKernels, ImageSpec, Kernels, Peaks } from './kernels';
 import { saturationElectrons } from './noise-units';
 import { plainKernels } from './plain-kernels';
-import type { InstantiateSimd } from './simd-exports';
+import type { InstantiateSimd, SimdExports } from './simd-exports';
 import { createSimdBackground } from './simd-background';
 import { createSimdLight } from './simd-light';
 import { reservePlanes } from './simd-planes';
 
 /**
- * Kernels compiled to WebAssembly. Images that an instance's memory (4 GB) can't hold are left to the
- * plain kernels.
+ * Kernels compiled to WebAssembly. Images that an instance's memory can't hold (4 GB at most, less where
+ * the system grants less) are left to the plain kernels.
  */
 export function createSimdKernels(instantiate: InstantiateSimd): Kernels {
   return { name: 'simd', forImages: (spec) => simdImages(spec, instantiate) ?? plainKernels.forImages(spec) };
@@ -22,7 +22,8 @@ function simdImages(spec: ImageSpec, instantiate: InstantiateSimd): FrameKernels
   const pixels = width * height;
   const kernel = createSpotKernel(spotSigmaPx);
   const { reach } = kernel;
-  const simd = instantiate();
+  const simd = instanceOrNull(instantiate);
+  if (!simd) return null;
   const arena = new Arena(simd.memory, simd.heapBase());
   const at = reservePlanes(arena, width, height, reach, scratchBytes);
   if (!arena.grow()) return null;
@@ -107,4 +108,14 @@ function simdImages(spec: ImageSpec, instantiate: InstantiateSimd): FrameKernels
     respond,
     findPeaks,
   };
+}
+
+/** Null where the system has no room for one more: engines set aside much more than an instance asks for. */
+function instanceOrNull(instantiate: InstantiateSimd): SimdExports | null {
+  try {
+    return instantiate();
+  } catch (cause) {
+    if (cause instanceof RangeError) return null;
+    throw cause;
+  }
 }
