@@ -81,6 +81,23 @@ describe('two web servers on one store', () => {
     expect(await here.storedSha256(recordingId)).toBe(sha256);
   });
 
+  it('a sender that has fallen silent at one gives way to the other', async () => {
+    const { url, recordingId } = await here.begin();
+    const first = here.patch(url, 0, slowBody(FILE, 8000).body).catch(() => null);
+    await until(
+      () => there.offset(url),
+      (offset) => offset === 8000,
+    );
+    const answer = await until(
+      () => there.patch(url, 8000, FILE.subarray(8000)),
+      ({ status }) => status !== 423,
+      { withinMs: 40_000, everyMs: 1000 },
+    );
+    expect([answer.status, answer.headers.get('upload-offset')]).toEqual([204, String(FILE.length)]);
+    expect((await first)?.status).not.toBe(204);
+    expect(await here.storedSha256(recordingId)).toBe(sha256);
+  });
+
   it('pieces sent to them in turn make the file byte for byte', async () => {
     const { url, recordingId } = await here.begin();
     for (let at = 0; at < FILE.length; at += 4000) {

@@ -5,6 +5,7 @@ import pg from 'pg';
 import { describe, expect, it } from 'vitest';
 import { reconcileUploads } from '@/app/api/uploads/reconcile-uploads';
 import { models } from '@/models';
+import { selectRow } from '@/models/queries/select';
 import { releaseSessionLock, trySessionLock } from '@/models/session-locks';
 import { callJson } from '../../helpers/call-route';
 import {
@@ -24,6 +25,7 @@ import {
   arrivingFile,
   stackPath,
 } from '../../helpers/upload-bench';
+import { until } from '../../helpers/until';
 
 prepareUploads();
 
@@ -58,6 +60,27 @@ describe('one sender at a time', () => {
     expect((await patch(location, 0, bytes.subarray(0, 10))).status).toBe(204);
     expect(await trySessionLock(`upload:${id}`)).toBe(true);
     await releaseSessionLock(`upload:${id}`);
+  });
+
+  it('when the connection that holds the locks is lost its sender is cut off, since others may write from then on', async () => {
+    const { location } = await begin();
+    const endless = new ReadableStream<Uint8Array>({
+      start: (controller) => controller.enqueue(bytes.subarray(0, 1000)),
+    });
+    const first = send('PATCH', location, { ...PIECE, 'upload-offset': '0' }, { body: endless });
+    await until(
+      () => offsetOf(location),
+      (offset) => offset === 1000,
+    );
+    const client = new pg.Client({ connectionString: bench.database.url });
+    await client.connect();
+    await client.query(
+      `SELECT pg_terminate_backend(pid) FROM pg_stat_activity
+       WHERE application_name = 'beadline locks' AND datname = current_database()`,
+    );
+    await client.end();
+    expect((await first).status).toBe(409);
+    expect((await patch(location, 1000, bytes.subarray(1000))).status).toBe(204);
   });
 });
 
@@ -123,6 +146,29 @@ describe('after a crash', () => {
     await reconcileUploads();
     expect((await recording(recordingId)).state).toBe('checking');
     expect(await models().JobRun.count({ where: { subjectId: recordingId } })).toBe(1);
+  });
+
+  it('an upload that got bytes since the list was made is not taken for an expired one', async () => {
+    const [waiting, living] = [await begin(), await begin()];
+    const expired = { expiresAt: new Date(Date.now() - 1000) };
+    await models().Upload.update(expired, { where: { id: [waiting.id, living.id] } });
+    // While the first one is looked at, the second gets a piece.
+    const client = new pg.Client({ connectionString: bench.database.url });
+    await client.connect();
+    await client.query('BEGIN');
+    await client.query('SELECT id FROM uploads WHERE id = $1 FOR UPDATE', [waiting.id]);
+    const reconciled = reconcileUploads();
+    await until(() =>
+      selectRow(
+        `SELECT 1 FROM pg_stat_activity
+         WHERE wait_event_type = 'Lock' AND datname = current_database() AND query LIKE 'DELETE FROM uploads%'`,
+      ),
+    );
+    await models().Upload.update({ expiresAt: new Date(Date.now() + 60_000) }, { where: { id: living.id } });
+    await client.query('ROLLBACK');
+    await client.end();
+    await reconciled;
+    expect([(await head(waiting.location)).status, (await head(living.location)).status]).toEqual([404, 200]);
   });
 
   it('an unfinished upload is left alone', async () => {
