@@ -10,6 +10,7 @@ import {
 } from '@/tracking/studies/mixed-recording';
 import { MIXED_SIZES, type MixedSet } from '@/tracking/simulate/mixed-scene';
 import { keepsPromises, studyStandardRecording } from '@/tracking/studies/standard-recording';
+import { steadyTangleCoverage } from '@/tracking/studies/steady-tangle';
 
 /** A study yields one line per case; `kept` is false where a stated promise was broken. */
 type Study = () => Iterable<Record<string, unknown>>;
@@ -22,6 +23,7 @@ const MIXED_SEEDS = [1, 2, 3, 4, 5];
 /** So many make a rate known to 6 %. */
 const FALSE_SPOTS_LEAST = 300;
 const TANGLE_SEEDS = Array.from({ length: 12 }, (_, i) => i + 1);
+const CAMPAIGN_SEEDS = Array.from({ length: 200 }, (_, i) => i + 1);
 /** Line densities from a slow counterflow to a dense tangle, m^-2. */
 const LINE_DENSITIES = [1e7, 3e7, 1e8];
 
@@ -69,6 +71,10 @@ const STUDIES: Record<string, Study> = {
         yield { ...summary };
       }
     }
+  },
+  /** How often the intervals of gamma and v_0 hold the truth. */
+  *'steady-tangle'() {
+    yield { ...steadyTangleCoverage(CAMPAIGN_SEEDS) };
   },
 };
 
