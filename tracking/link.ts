@@ -5,7 +5,8 @@ import { linkPass, type LinkLimits } from './linking/link-pass';
 import { firstStatistics, measureStatistics } from './linking/motion-statistics';
 import { createSpotTable } from './linking/spot-table';
 import { statisticsSample } from './linking/statistics-sample';
-import { followers, untangle } from './linking/untangle';
+import { trackLinks } from './linking/track-links';
+import { untangle } from './linking/untangle';
 import type { Recipe, Spots, Tracks } from './types';
 
 /** What linking needs of a recipe. */
@@ -56,14 +57,13 @@ export function linkSpots(spots: Spots, size: RecordingSize, recipe: LinkRecipe)
   const motion = measureStatistics(sample, rough, limits);
   const brightness = measureBrightness(sample, rough);
   const table = createSpotTable(spots, brightness);
-  const before = linkPass(table, limits, motion, brightness);
-  const after = followers(before);
+  const links = trackLinks(linkPass(table, limits, motion, brightness));
   for (let round = 0; round < ROUNDS; round++) {
-    joinPieces(table, before, after, limits, motion, brightness);
-    untangle(table, before, after, limits, motion, brightness, recipe.spotSizePx ?? SPOT_SIZE_PX);
+    joinPieces(table, links, limits, motion, brightness);
+    untangle(table, links, limits, motion, brightness, recipe.spotSizePx ?? SPOT_SIZE_PX, round > 0);
   }
-  joinPieces(table, before, after, limits, motion, brightness);
-  return assembleTracks(spots, before, recipe.shortestTrackFrames);
+  joinPieces(table, links, limits, motion, brightness);
+  return assembleTracks(spots, links.before, recipe.shortestTrackFrames);
 }
 
 function checkOrder(spots: Spots, frames: number): void {

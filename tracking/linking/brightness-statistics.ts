@@ -24,7 +24,7 @@ export const BRIGHTNESS_UNTOLD: BrightnessStatistics = {
 /** Frames over which the slow change of brightness is measured. */
 const LAG_FRAMES = 8;
 const SAMPLES_LEAST = 30;
-const SAMPLES_MOST = 50_000;
+const SAMPLES_MOST = 20_000;
 /** Tracers must differ by so much of what spots of one tracer differ by, or the cue is left alone. */
 const CONTRAST_LEAST = 0.15;
 /** No brightness is known better than this (relative): pixels differ, the sheet ripples. */

@@ -1,4 +1,5 @@
 import type { SpotTable } from './spot-table';
+import type { TrackLinks } from './track-links';
 
 /** Two tracks near each other from frame to frame; each is named by one of its spots. */
 export interface CloseApproaches {
@@ -18,18 +19,16 @@ const APART_FRAMES = 2;
  * which it was missed (on the line between its spots) and for `beyondFrames` before its first
  * and after its last spot (where that was).
  *
- * @param before for each spot the one before it in its track, or -1.
  * @returns approaches by first frame, then by the tracks' first spots.
  */
 export function closeApproaches(
   table: SpotTable,
-  before: Int32Array,
-  after: Int32Array,
+  links: TrackLinks,
   nearPx: number,
   beyondFrames: number,
 ): CloseApproaches {
-  const root = roots(before);
-  const shadows = shadowPoints(table, before, after, beyondFrames);
+  const root = roots(links.before);
+  const shadows = shadowPoints(table, links, beyondFrames);
   const meetings = new Meetings();
   const local = new FrameList();
   let shadow = 0;
@@ -74,7 +73,7 @@ interface Shadows {
 }
 
 /** Where tracks are thought to be in frames in which they have no spot, by frame. */
-function shadowPoints(table: SpotTable, before: Int32Array, after: Int32Array, beyond: number): Shadows {
+function shadowPoints(table: SpotTable, { before, after }: TrackLinks, beyond: number): Shadows {
   const last = table.count > 0 ? table.frame[table.count - 1] : 0;
   const frame: number[] = [];
   const xPx: number[] = [];

@@ -7,6 +7,7 @@ import { PairFilter } from './pair-filter';
 import { readTrack } from './read-track';
 import type { SpotTable } from './spot-table';
 import { TracerFilter } from './tracer-filter';
+import { putBefore, type TrackLinks } from './track-links';
 
 /**
  * Joins ends of tracks to starts of others within the frames that a tracer may vanish for, all at
@@ -16,14 +17,13 @@ import { TracerFilter } from './tracer-filter';
  */
 export function joinPieces(
   table: SpotTable,
-  before: Int32Array,
-  after: Int32Array,
+  links: TrackLinks,
   limits: LinkLimits,
   motion: MotionStatistics,
   brightness: BrightnessStatistics,
 ): void {
-  const ends = spotsWithout(after);
-  const starts = spotsWithout(before);
+  const ends = spotsWithout(links.after);
+  const starts = spotsWithout(links.before);
   const forward = new PairFilter(motion, brightness, table, 1, 2);
   const backward = new TracerFilter(motion, brightness, table, -1, 1);
   const edges = createEdges();
@@ -42,9 +42,9 @@ export function joinPieces(
       const dy = table.yPx[s] - table.yPx[e];
       const most = gap * limits.longestStepPx;
       if (dx * dx + dy * dy > most * most) continue;
-      if (!read) readTrack(backward, 0, table, after, s);
+      if (!read) readTrack(backward, 0, table, links.after, s);
       read = true;
-      readTrack(forward, 0, table, before, e);
+      readTrack(forward, 0, table, links.before, e);
       for (let g = 0; g < gap; g++) forward.predict(0);
       forward.missed[0] = gap - 1;
       const cost = forward.joinCost(0, backward, 0);
@@ -56,9 +56,7 @@ export function joinPieces(
   const solver = createAssignmentSolver();
   solver.solve({ rows: starts.length, columns: ends.length, ...edges.arrays() }, endOf);
   for (let row = 0; row < starts.length; row++) {
-    if (endOf[row] < 0) continue;
-    before[starts[row]] = ends[endOf[row]];
-    after[ends[endOf[row]]] = starts[row];
+    if (endOf[row] >= 0) putBefore(links, starts[row], ends[endOf[row]]);
   }
 }
 

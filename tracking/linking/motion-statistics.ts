@@ -1,5 +1,6 @@
 import type { Spots } from '../types';
 import type { LinkLimits } from './link-pass';
+import { MEDIAN_OF_SQUARE, medianOf } from './medians';
 
 /** How tracers move and appear, measured from a first pass of linking. */
 export interface MotionStatistics {
@@ -18,12 +19,11 @@ export interface MotionStatistics {
   newPerPx2: number;
 }
 
-/** Median of the square of a standard normal value. */
-const MEDIAN_OF_SQUARE = 0.4549364;
 /** Changes of velocity beyond this many usual ones count as jumps. */
 const JUMP_SIGMAS = 3.5;
 const JITTER_LEAST_PX2 = 0.02 ** 2;
 const SAMPLES_LEAST = 30;
+const SAMPLES_MOST = 30_000;
 const JUMP_SHARE_LEAST = 0.01;
 const JUMP_SHARE_MOST = 0.2;
 /** Tracers that merge with others are missed for longer than chance would have it. */
@@ -54,10 +54,14 @@ export function firstStatistics(spots: Spots, limits: LinkLimits): MotionStatist
  */
 export function measureStatistics(spots: Spots, before: Int32Array, limits: LinkLimits): MotionStatistics {
   const first = firstStatistics(spots, limits);
-  const stepX: number[] = [];
-  const stepY: number[] = [];
-  const changes: number[] = [];
+  // Of a large sample every so many-th link says enough.
+  const every = Math.max(1, Math.floor(spots.count / SAMPLES_MOST));
+  const room = Math.ceil(spots.count / every) + 1;
+  const stepX = new Float64Array(room);
+  const stepY = new Float64Array(room);
+  const changes = new Float64Array(2 * room);
   let measured = 0;
+  let changed = 0;
   let links = 0;
   let spanned = 0;
   let starts = 0;
@@ -76,34 +80,36 @@ export function measureStatistics(spots: Spots, before: Int32Array, limits: Link
     }
     links++;
     spanned += spots.frame[s] - spots.frame[b];
-    if (spots.frame[s] - spots.frame[b] !== 1) continue;
+    if (s % every !== 0 || spots.frame[s] - spots.frame[b] !== 1) continue;
     const a = before[b];
     if (a < 0 || spots.frame[b] - spots.frame[a] !== 1) continue;
-    stepX.push(spots.xPx[s] - spots.xPx[b]);
-    stepY.push(spots.yPx[s] - spots.yPx[b]);
+    stepX[measured] = spots.xPx[s] - spots.xPx[b];
+    stepY[measured++] = spots.yPx[s] - spots.yPx[b];
     // Second difference: the change of velocity, plus three measurement errors of weight 1, -2, 1.
-    changes.push((spots.xPx[s] - 2 * spots.xPx[b] + spots.xPx[a]) ** 2 - noise(spots.sxPx, s, b, a));
-    changes.push((spots.yPx[s] - 2 * spots.yPx[b] + spots.yPx[a]) ** 2 - noise(spots.syPx, s, b, a));
-    measured++;
+    const changeX = spots.xPx[s] - 2 * spots.xPx[b] + spots.xPx[a];
+    const changeY = spots.yPx[s] - 2 * spots.yPx[b] + spots.yPx[a];
+    changes[changed++] = changeX * changeX - noise(spots.sxPx, s, b, a);
+    changes[changed++] = changeY * changeY - noise(spots.syPx, s, b, a);
   }
   if (measured < SAMPLES_LEAST) return first;
 
   const noiseOf = meanNoise(spots);
-  const typical = Math.max(0, median(changes) + noiseOf) / MEDIAN_OF_SQUARE;
+  const typical = Math.max(0, medianOf(changes, changed) + noiseOf) / MEDIAN_OF_SQUARE;
   const jitter = Math.min(first.startVariance, Math.max(JITTER_LEAST_PX2, typical - noiseOf));
   const usual = JUMP_SIGMAS * JUMP_SIGMAS * (jitter + noiseOf);
   let jumps = 0;
   let jumpSquares = 0;
-  for (const change of changes) {
+  for (let k = 0; k < changed; k++) {
+    const change = changes[k];
     if (change + noiseOf <= usual) continue;
     jumps++;
     jumpSquares += change;
   }
-  const jumpShare = clamp(jumps / changes.length, JUMP_SHARE_LEAST, JUMP_SHARE_MOST);
+  const jumpShare = clamp(jumps / changed, JUMP_SHARE_LEAST, JUMP_SHARE_MOST);
   const jumpVariance = jumps >= SAMPLES_LEAST ? Math.max(jumpSquares / jumps, usual) : first.jumpVariance;
-  const meanX = mean(stepX);
-  const meanY = mean(stepY);
-  const startVariance = 0.5 * (spread(stepX, meanX) + spread(stepY, meanY));
+  const meanX = mean(stepX, measured);
+  const meanY = mean(stepY, measured);
+  const startVariance = 0.5 * (spread(stepX, measured, meanX) + spread(stepY, measured, meanY));
   return {
     jitter,
     meanX,
@@ -116,33 +122,29 @@ export function measureStatistics(spots: Spots, before: Int32Array, limits: Link
   };
 }
 
+/** Variance that position errors give a second difference: their weights are 1, -2 and 1. */
 function noise(errors: Float32Array, s: number, b: number, a: number): number {
-  return errors[s] ** 2 + 4 * errors[b] ** 2 + errors[a] ** 2;
+  return errors[s] * errors[s] + 4 * errors[b] * errors[b] + errors[a] * errors[a];
 }
 
 /** Six times the median position variance: the noise of a typical second difference. */
 function meanNoise({ sxPx, count }: Spots): number {
   const step = Math.max(1, Math.floor(count / 5000));
-  const values: number[] = [];
-  for (let s = 0; s < count; s += step) values.push(sxPx[s] ** 2);
-  return 6 * median(values);
+  const values = new Float64Array(Math.ceil(count / step));
+  for (let k = 0; k < values.length; k++) values[k] = sxPx[k * step] * sxPx[k * step];
+  return 6 * medianOf(values, values.length);
 }
 
-function median(values: number[]): number {
-  const sorted = Float64Array.from(values).sort();
-  return sorted[sorted.length >> 1];
-}
-
-function mean(values: readonly number[]): number {
+function mean(values: Float64Array, count: number): number {
   let sum = 0;
-  for (const value of values) sum += value;
-  return sum / values.length;
+  for (let k = 0; k < count; k++) sum += values[k];
+  return sum / count;
 }
 
-function spread(values: readonly number[], around: number): number {
+function spread(values: Float64Array, count: number, around: number): number {
   let sum = 0;
-  for (const value of values) sum += (value - around) ** 2;
-  return sum / values.length;
+  for (let k = 0; k < count; k++) sum += (values[k] - around) * (values[k] - around);
+  return sum / count;
 }
 
 function clamp(value: number, least: number, most: number): number {

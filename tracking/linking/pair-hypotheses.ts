@@ -5,6 +5,7 @@ import { PairFilter } from './pair-filter';
 import { readTrack } from './read-track';
 import type { SpotTable } from './spot-table';
 import { TracerFilter } from './tracer-filter';
+import { putBefore, type TrackLinks } from './track-links';
 
 /** Explanations kept from frame to frame. */
 const KEPT = 16;
@@ -42,8 +43,7 @@ export class PairHypotheses {
 
   constructor(
     private readonly table: SpotTable,
-    private readonly before: Int32Array,
-    private readonly after: Int32Array,
+    private readonly links: TrackLinks,
     private readonly limits: LinkLimits,
     motion: MotionStatistics,
     brightness: BrightnessStatistics,
@@ -53,8 +53,12 @@ export class PairHypotheses {
     this.backward = new TracerFilter(motion, brightness, table, -1, 2);
   }
 
-  /** Decides frames `from .. to` of the tracks that spots `a` and `b` are in; no-op if they are one. */
-  decide(a: number, b: number, from: number, to: number): void {
+  /**
+   * Decides frames `from .. to` of the tracks that spots `a` and `b` are in; no-op if they are one.
+   *
+   * @param again skips what nothing was changed at since it was decided before.
+   */
+  decide(a: number, b: number, from: number, to: number, again: boolean): void {
     const headA = this.headBefore(a, from);
     const headB = this.headBefore(b, from);
     const frames = to - from + 1;
@@ -66,13 +70,17 @@ export class PairHypotheses {
     const tailA = this.collect(this.firstFrom(a, headA), from, to, this.spotA);
     const tailB = this.collect(this.firstFrom(b, headB), from, to, this.spotB);
     if ((headA >= 0 && headA === headB) || (tailA >= 0 && tailA === tailB)) return;
+    const { changed } = this.links;
     let spots = 0;
+    let news = isSet(changed, headA) + isSet(changed, headB) + isSet(changed, tailA) + isSet(changed, tailB);
     for (let k = 0; k < frames; k++) {
-      if (this.spotA[k] >= 0) spots++;
-      if (this.spotB[k] < 0) continue;
-      if (this.spotA[k] === this.spotB[k]) return;
-      spots++;
+      const a = this.spotA[k];
+      const b = this.spotB[k];
+      if (a >= 0 && a === b) return;
+      spots += (a >= 0 ? 1 : 0) + (b >= 0 ? 1 : 0);
+      news += isSet(changed, a) + isSet(changed, b);
     }
+    if (again && news === 0) return;
     if (spots === 0 && (headA < 0 || headB < 0) && (tailA < 0 || tailB < 0)) return;
 
     this.now = 0;
@@ -81,8 +89,8 @@ export class PairHypotheses {
     this.cost[0] = 0;
     let kept = 1;
     for (let k = 0; k < frames; k++) kept = this.step(k, kept, from + k);
-    if (tailA >= 0) readTrack(this.backward, 0, this.table, this.after, tailA);
-    if (tailB >= 0) readTrack(this.backward, 1, this.table, this.after, tailB);
+    if (tailA >= 0) readTrack(this.backward, 0, this.table, this.links.after, tailA);
+    if (tailB >= 0) readTrack(this.backward, 1, this.table, this.links.after, tailB);
     let best = 0;
     let bestCost = Infinity;
     let crossed = false;
@@ -100,7 +108,8 @@ export class PairHypotheses {
 
   /** Last spot of the track of `s` before a frame, or -1. */
   private headBefore(s: number, frame: number): number {
-    const { table, before, after } = this;
+    const { table } = this;
+    const { before, after } = this.links;
     let head = s;
     while (head >= 0 && table.frame[head] >= frame) head = before[head];
     if (head < 0) return NONE;
@@ -109,9 +118,9 @@ export class PairHypotheses {
   }
 
   private firstFrom(s: number, head: number): number {
-    if (head >= 0) return this.after[head];
+    if (head >= 0) return this.links.after[head];
     let first = s;
-    while (this.before[first] >= 0) first = this.before[first];
+    while (this.links.before[first] >= 0) first = this.links.before[first];
     return first;
   }
 
@@ -119,13 +128,13 @@ export class PairHypotheses {
   private collect(first: number, from: number, to: number, into: Int32Array): number {
     into.fill(NONE, 0, to - from + 1);
     let s = first;
-    for (; s >= 0 && this.table.frame[s] <= to; s = this.after[s]) into[this.table.frame[s] - from] = s;
+    for (; s >= 0 && this.table.frame[s] <= to; s = this.links.after[s]) into[this.table.frame[s] - from] = s;
     return s;
   }
 
   private readHead(slot: number, head: number, from: number): 0 | 1 {
     if (head < 0) return 0;
-    readTrack(this.forward, slot, this.table, this.before, head);
+    readTrack(this.forward, slot, this.table, this.links.before, head);
     for (let f = this.table.frame[head] + 1; f < from; f++) {
       this.forward.predict(slot);
       this.forward.missed[slot]++;
@@ -273,7 +282,7 @@ export class PairHypotheses {
     crossed: boolean,
     to: number,
   ): void {
-    const { after, before, spotA, spotB } = this;
+    const { links, spotA, spotB } = this;
     const endA = this.tailCost(this.now + 2 * best, crossed ? tailB : tailA, crossed ? 1 : 0, to) < 0;
     const endB = this.tailCost(this.now + 2 * best + 1, crossed ? tailA : tailB, crossed ? 0 : 1, to) < 0;
     const path = new Int32Array(frames);
@@ -281,16 +290,14 @@ export class PairHypotheses {
       path[k] = this.history[k * KEPT + h];
       h = path[k] >> 4;
     }
-    if (headA >= 0) after[headA] = NONE;
-    if (headB >= 0) after[headB] = NONE;
+    if (headA >= 0) links.after[headA] = NONE;
+    if (headB >= 0) links.after[headB] = NONE;
+    for (let k = 0; k < frames; k++) {
+      if (spotA[k] >= 0) links.after[spotA[k]] = NONE;
+      if (spotB[k] >= 0) links.after[spotB[k]] = NONE;
+    }
     let lastA = headA;
     let lastB = headB;
-    const link = (last: number, s: number, fresh: boolean): number => {
-      before[s] = fresh ? NONE : last;
-      if (!fresh && last >= 0) after[last] = s;
-      after[s] = NONE;
-      return s;
-    };
     for (let k = 0; k < frames; k++) {
       const does = path[k] & 15;
       const swap = (does & CROSSED) !== 0;
@@ -299,22 +306,23 @@ export class PairHypotheses {
       const merged = (does & MERGED) !== 0 ? this.spotSizePx * this.spotSizePx * MERGED_VARIANCE : 0;
       if (toA >= 0) this.table.merged[toA] = merged;
       if (toB >= 0) this.table.merged[toB] = merged;
-      if (toA >= 0) lastA = link(lastA, toA, (does & FRESH_A) !== 0);
-      if (toB >= 0) lastB = link(lastB, toB, (does & FRESH_B) !== 0);
+      if (toA >= 0) putBefore(links, toA, (does & FRESH_A) !== 0 ? NONE : lastA);
+      if (toB >= 0) putBefore(links, toB, (does & FRESH_B) !== 0 ? NONE : lastB);
+      if (toA >= 0) lastA = toA;
+      if (toB >= 0) lastB = toB;
     }
     const followA = crossed ? tailB : tailA;
     const followB = crossed ? tailA : tailB;
-    if (followA >= 0) this.attach(lastA, followA, endA);
-    if (followB >= 0) this.attach(lastB, followB, endB);
-  }
-
-  private attach(last: number, tail: number, joined: boolean): void {
-    this.before[tail] = joined ? last : NONE;
-    if (joined) this.after[last] = tail;
+    if (followA >= 0) putBefore(links, followA, endA ? lastA : NONE);
+    if (followB >= 0) putBefore(links, followB, endB ? lastB : NONE);
   }
 }
 
 /** Marks of spots at which a tracer starts anew, those that cost nothing to take. */
 function fresh(toA: number, costA: number, toB: number, costB: number): number {
   return (toA >= 0 && costA >= 0 ? FRESH_A : 0) + (toB >= 0 && costB >= 0 ? FRESH_B : 0);
+}
+
+function isSet(marks: Uint8Array, s: number): number {
+  return s >= 0 ? marks[s] : 0;
 }

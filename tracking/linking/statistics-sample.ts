@@ -2,8 +2,10 @@ import { concatSpots, sliceSpots } from '../spots';
 import type { Spots } from '../types';
 
 /** Enough spots to learn from how tracers move; more would only take time. */
-const SPOTS_ENOUGH = 200_000;
+const SPOTS_ENOUGH = 50_000;
 const WINDOWS = 4;
+/** A window is long enough to see how velocity and brightness change. */
+const FRAMES_LEAST = 16;
 
 /**
  * All spots of a small recording; of a large one those of a few windows of consecutive frames,
@@ -17,7 +19,9 @@ export function statisticsSample(spots: Spots): Spots {
   for (let w = 0; w < WINDOWS; w++) {
     const about = Math.round((w * (spots.count - each)) / (WINDOWS - 1));
     const from = Math.max(last, frameStart(spots, about));
-    const to = Math.max(from, w === WINDOWS - 1 ? spots.count : frameStart(spots, about + each));
+    if (from >= spots.count) break;
+    let to = w === WINDOWS - 1 ? spots.count : Math.max(from, frameStart(spots, about + each));
+    while (to < spots.count && spots.frame[to] < spots.frame[from] + FRAMES_LEAST) to++;
     parts.push(sliceSpots(spots, from, to));
     last = to;
   }

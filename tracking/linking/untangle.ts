@@ -4,6 +4,7 @@ import type { LinkLimits } from './link-pass';
 import type { MotionStatistics } from './motion-statistics';
 import { PairHypotheses } from './pair-hypotheses';
 import type { SpotTable } from './spot-table';
+import type { TrackLinks } from './track-links';
 
 /** Tracks nearer than this many spot sizes may have been taken for each other. */
 const NEAR_SIZES = 3.5;
@@ -14,31 +15,27 @@ const MARGIN_FRAMES = 2;
  * Decides anew, for each approach of two tracks, which spots near it belong to which of them and
  * which piece after it continues which piece before it. The motion and brightness of the pieces on
  * either side weigh jointly; a spot in the middle may be both tracers in one. Links change in place.
+ *
+ * @param again looks only at approaches of tracks that were changed since the first look.
  */
 export function untangle(
   table: SpotTable,
-  before: Int32Array,
-  after: Int32Array,
+  links: TrackLinks,
   limits: LinkLimits,
   motion: MotionStatistics,
   brightness: BrightnessStatistics,
   spotSizePx: number,
+  again: boolean,
 ): void {
-  const close = closeApproaches(table, before, after, NEAR_SIZES * spotSizePx, limits.mayVanishFrames);
-  const hypotheses = new PairHypotheses(table, before, after, limits, motion, brightness, spotSizePx);
+  const close = closeApproaches(table, links, NEAR_SIZES * spotSizePx, limits.mayVanishFrames);
+  const hypotheses = new PairHypotheses(table, links, limits, motion, brightness, spotSizePx);
   for (let k = 0; k < close.count; k++) {
     hypotheses.decide(
       close.spotA[k],
       close.spotB[k],
       close.from[k] - MARGIN_FRAMES,
       close.to[k] + MARGIN_FRAMES,
+      again,
     );
   }
-}
-
-/** For each spot the one after it in its track, or -1. */
-export function followers(before: Int32Array): Int32Array {
-  const after = new Int32Array(before.length).fill(-1);
-  for (let s = 0; s < before.length; s++) if (before[s] >= 0) after[before[s]] = s;
-  return after;
 }
