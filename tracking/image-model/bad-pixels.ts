@@ -7,11 +7,12 @@ const OFF_NOISE = 1.5;
 /** A tracer lights the neighbours too; a hot pixel doesn't. Mean of four neighbours, relative. */
 const NEIGHBOUR_SHARE_MOST = 0.2;
 /**
- * A pixel that is bright now and then: its mean square is so many times what it should be, and that
- * of its neighbours, relative, isn't. Squares of a spot of 0.5 px fall to 0.05 one pixel away.
+ * A pixel that is bright now and then: its mean square is more than it should be by so many times
+ * that, and by more than a single frame of 8 noise widths makes, and that of its neighbours,
+ * relative, isn't. Squares of a spot of 0.5 px fall to 0.05 one pixel away.
  */
 const BLINKING_EXCESS = 6;
-const BLINKING_ERRORS = 8;
+const BLINKING_NOISE = 8;
 const BLINKING_NEIGHBOUR_SHARE_MOST = 0.04;
 /**
  * A pixel that varies by less than this share of the variance is stuck, or less still where few
@@ -39,7 +40,7 @@ export function findBadPixels(
   const pixels = width * height;
   const bad = new Uint8Array(pixels);
   const offShare = Math.max(OFF_NOISE, OFF_STANDARD_ERRORS / Math.sqrt(frames));
-  const blinkingShare = Math.max(BLINKING_EXCESS, BLINKING_ERRORS * Math.sqrt(2 / frames));
+  const blinkingShare = Math.max(BLINKING_EXCESS, BLINKING_NOISE ** 2 / frames);
   const stuckShare = frames < STUCK_FRAMES_LEAST ? 0 : shareByChance(frames);
   let count = 0;
   for (let i = 0; i < pixels; i++) {
