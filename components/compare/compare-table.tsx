@@ -1,6 +1,6 @@
 import Link from 'next/link';
 import { SeriesMark, seriesLook } from '@/components/charts/series-marks';
-import { Quantity } from '@/components/ui/quantity';
+import { Quantity, QuantitySymbol } from '@/components/ui/quantity';
 import { Cell, CellNote, HeadCell, Row, Table } from '@/components/ui/table';
 import { formatCount } from '@/lib/format/count';
 import { DISPLAY_UNITS } from '@/lib/format/unit';
@@ -31,8 +31,7 @@ export function CompareTable({ runs, campaigns, sortBy }: CompareTableProps) {
             Heat flux
           </HeadCell>
           <HeadCell numeric unit={velocity.unit} sort={sortBy('vns')}>
-            <i className="font-serif">v</i>
-            <sub className="font-serif">ns</sub>
+            <QuantitySymbol letter="v" sub="ns" />
           </HeadCell>
           <HeadCell numeric unit={`${lineDensity.unit}, 95 %`} sort={sortBy('density')}>
             <i className="font-serif">L</i>
