@@ -2,13 +2,15 @@ import { createGroupFitter } from './detection/group-fitter';
 import { JOINT_SPOTS_MOST } from './detection/fit-work';
 import { createPlainSpotFits } from './detection/plain-spot-fits';
 import { createSpotKernel } from './detection/spot-kernel';
+import { createSpotOrder } from './detection/spot-order';
 import { SpotTable } from './detection/spot-table';
+import { statedError } from './detection/stated-error';
 import { gainForLevel, levelForFalseMaxima } from './detection/threshold';
 import { jointFitRoom } from './kernels/joint-fit-memory';
 import { createSimdSpotFits } from './kernels/joint-fit-simd';
 import type { Kernels } from './kernels/kernels';
 import { plainKernels } from './kernels/plain-kernels';
-import { backgroundOfFrame } from './image-model/background-of-frame';
+import { blocksOfFrame } from './image-model/background-of-frame';
 import type { SpotSink } from './spots';
 import {
   SPOT_EDGE,
@@ -69,6 +71,8 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
   pictures.bad.set(badPixels);
   pictures.background.set(backgroundE);
   const { response } = pictures;
+  const drift = model.backgroundDrift;
+  const backgroundBlocks = new Float64Array(drift ? drift.columns * drift.rows : 0);
   const countScale = { offsetCounts, perCount: 1 / recipe.gain, saturationCounts };
   const fitsOptions = { width, height, spotSigmaPx: sigma, readVariance, reach };
   const fits = pictures.compiled
@@ -76,13 +80,17 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
     : createPlainSpotFits(pictures, fitsOptions);
   const fitter = createGroupFitter({ ...fitsOptions, bare: pictures.bare }, fits);
   const table = new SpotTable();
+  let refitted = new Uint8Array(256);
   const near = new Int32Array(64);
   const members = new Int32Array(JOINT_SPOTS_MOST);
-  let order = new Int32Array(0);
+  const order = createSpotOrder();
 
   /** Electrons, what can be used of them, and the frame in units of its noise. */
   const prepare = ({ counts }: Frame, frameIndex: number) => {
-    if (model.backgroundDrift) backgroundOfFrame(model, frameIndex, pictures.background);
+    if (drift) {
+      blocksOfFrame(drift, frameIndex, backgroundBlocks);
+      pictures.paintBackground(backgroundBlocks, drift);
+    }
     pictures.toElectrons(counts, countScale);
     pictures.respond(pictures.lightLevel(readVariance), readVariance);
   };
@@ -108,12 +116,6 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
     const after = response[at + step];
     const bend = 2 * response[at] - before - after;
     return bend > 0 ? Math.max(-0.5, Math.min(0.5, (0.5 * (after - before)) / bend)) : 0;
-  };
-
-  const sortOrder = (compare: (a: number, b: number) => number) => {
-    if (order.length < table.count) order = new Int32Array(2 * table.count);
-    for (let i = 0; i < table.count; i++) order[i] = i;
-    return order.subarray(0, table.count).sort(compare);
   };
 
   /** Grows a group from its brightest spot by nearest neighbours, leaving room for one more. */
@@ -159,11 +161,12 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
       ),
     );
     const gainLeast = lookLevel * lookLevel;
-    const byResponse = sortOrder((a, b) => table.response[b] - table.response[a] || a - b);
+    const byResponse = order.byResponse(table, found);
     for (let k = 0; k < found; k++) {
       const seed = byResponse[k];
       if (table.group[seed] >= 0) continue;
       const count = gather(seed);
+      for (let m = 0; m < count; m++) table.turn[members[m]] = k;
       setOffsetSpread(seed);
       // A lone faint maximum must gain the likelihood that the level stands for.
       const aloneLeast = table.response[seed] > level + LEVEL_SURE ? 0 : gainForNoise(seed);
@@ -172,21 +175,24 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
     if (lookTwice) refitNextToOthers(cell);
   };
 
-  /** Groups whose pixels hold light of other groups are fitted again, now that those are known. */
+  /** Groups whose pixels hold light of groups that had their turn later are fitted again, now that those are known. */
   const refitNextToOthers = (cell: number) => {
     table.index(width, height, cell);
+    if (refitted.length < table.count) refitted = new Uint8Array(2 * table.count);
+    refitted.fill(0, 0, table.count);
     for (let i = 0; i < table.count; i++) {
-      if (table.alive[i] === 0) continue;
+      if (table.alive[i] === 0 || refitted[i] === 1) continue;
       const found = table.near(i, 2 * reach + 1, near);
-      let others = false;
+      let later = false;
       let count = 1;
       members[0] = i;
       for (let m = 0; m < found; m++) {
         const j = near[m];
-        if (table.group[j] !== table.group[i]) others = true;
+        if (table.group[j] !== table.group[i]) later ||= table.turn[j] > table.turn[i];
         else if (count < JOINT_SPOTS_MOST) members[count++] = j;
       }
-      if (!others) continue;
+      if (!later) continue;
+      for (let m = 0; m < count; m++) refitted[members[m]] = 1;
       setOffsetSpread(i);
       fitter.fit(table, members, count, false, 0, 0);
     }
@@ -224,18 +230,14 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
     propose();
     fitGroups();
     table.index(width, height, Math.max(TOGETHER_SIGMAS, OVERLAP_SIGMAS) * sigma);
-    const sorted = sortOrder(
-      (a, b) =>
-        Math.fround(table.y[a]) - Math.fround(table.y[b]) ||
-        Math.fround(table.x[a]) - Math.fround(table.x[b]) ||
-        a - b,
-    );
-    for (const i of sorted) {
-      const inside =
-        table.x[i] >= -0.5 && table.y[i] >= -0.5 && table.x[i] < width - 0.5 && table.y[i] < height - 0.5;
-      if (table.alive[i] === 0 || !inside || !(table.sx[i] < Infinity && table.sy[i] < Infinity)) continue;
-      const { x, y, sx, sy, n, response: snr } = table;
-      sink.push(frameIndex, x[i], y[i], sx[i], sy[i], n[i], snr[i], flagsOf(i));
+    const { x, y, sx, sy, sn, n, response: snr, doubtX, doubtY, alive } = table;
+    for (const i of order.byPlace(table)) {
+      const inside = x[i] >= -0.5 && y[i] >= -0.5 && x[i] < width - 0.5 && y[i] < height - 0.5;
+      if (alive[i] === 0 || !inside || !(sx[i] < Infinity && sy[i] < Infinity)) continue;
+      const certainty = n[i] / sn[i];
+      const errorX = statedError(sx[i], certainty, doubtX[i]);
+      const errorY = statedError(sy[i], certainty, doubtY[i]);
+      sink.push(frameIndex, x[i], y[i], errorX, errorY, n[i], snr[i], flagsOf(i));
     }
   };
   return { detect };

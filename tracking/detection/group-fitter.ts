@@ -1,5 +1,6 @@
 import { JOINT_SPOTS_MOST } from './fit-work';
-import { DARK_VARIANCE_E2, SHAPE_ERROR } from './second-look';
+import { BESIDE_SIGMAS, MERGED_SIGMAS, chanceOfTwo, gainWanted } from './one-or-two';
+import { DARK_VARIANCE_E2 } from './second-look';
 import { createSpotKernel } from './spot-kernel';
 import type { SpotFits } from './spot-fits';
 import type { SpotTable } from './spot-table';
@@ -21,6 +22,13 @@ const ELONGATION_TRIED = 8;
 const RESPONSE_TRIED = 3;
 /** Two spots closer than this many spot sizes can't be told from one with a slightly wrong shape. */
 const CLOSEST_SIGMAS = 0.9;
+/**
+ * Of spots that likelihood told apart each may be uncertain, since they share their light and their places
+ * hang on each other: what one may lose the other gains.
+ */
+const TOLD_APART_SIGMAS_LEAST = 1.5;
+const TOLD_APART_CLOSEST_SIGMAS = 0.6;
+
 /** Fits groups of neighbouring spots together and asks whether there are more. */
 export interface GroupFitter {
   /**
@@ -94,6 +102,7 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
     for (let k = 0; k < count; k++) {
       const i = members[k];
       let strength = table.n[i] / table.sn[i];
+      if (table.toldApart[i] === 1) strength *= BRIGHTNESS_SIGMAS_LEAST / TOLD_APART_SIGMAS_LEAST;
       if (tooCloseToBrighter(table, members, count, k) || !(strength > 0)) strength = 0;
       if (strength < least) {
         least = strength;
@@ -108,11 +117,11 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
 
   const tooCloseToBrighter = (table: SpotTable, members: Int32Array, count: number, k: number) => {
     const i = members[k];
+    const closest = table.toldApart[i] === 1 ? TOLD_APART_CLOSEST_SIGMAS : CLOSEST_SIGMAS;
     for (let m = 0; m < count; m++) {
       const j = members[m];
       if (m === k || table.n[j] < table.n[i]) continue;
-      const distance = Math.hypot(table.x[i] - table.x[j], table.y[i] - table.y[j]);
-      if (distance < CLOSEST_SIGMAS * spotSigmaPx) return true;
+      if (apart(table.x[i] - table.x[j], table.y[i] - table.y[j]) < closest) return true;
     }
     return false;
   };
@@ -123,8 +132,12 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
     joint.elongate();
     let most = ELONGATION_TRIED;
     for (let k = 0; k < count; k++) {
+      const i = members[k];
       const score = joint.elongation[k];
-      table.elongation[members[k]] = score;
+      const chance = chanceOfTwo(score);
+      table.elongation[i] = score;
+      table.doubtX[i] = chance * joint.splitX[k] ** 2;
+      table.doubtY[i] = chance * joint.splitY[k] ** 2;
       if (!(score > most)) continue;
       most = score;
       widest.split = k;
@@ -148,6 +161,21 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
     return count;
   };
 
+  /** Distance in spot sizes. */
+  const apart = (dxPx: number, dyPx: number) => Math.sqrt(dxPx * dxPx + dyPx * dyPx) / spotSigmaPx;
+
+  /** Whether the spots of the fit made last are there, each in a place of its own. */
+  const areApart = (count: number): boolean => {
+    const { x, y, n, sn } = joint;
+    for (let k = 0; k < count; k++) {
+      if (!(n[k] > TOLD_APART_SIGMAS_LEAST * sn[k])) return false;
+      for (let m = 0; m < k; m++) {
+        if (apart(x[k] - x[m], y[k] - y[m]) < TOLD_APART_CLOSEST_SIGMAS) return false;
+      }
+    }
+    return true;
+  };
+
   /** Tries one more spot near those fitted; true when the data ask for it. */
   const tryOneMore = (table: SpotTable, members: Int32Array, count: number, gainLeast: number): boolean => {
     const peak = joint.look();
@@ -166,23 +194,19 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
     joint.load(count + 1);
     joint.run(count, offsetSpreadE);
     const before = joint.logLikelihood();
-    let light = 0;
-    for (let k = 0; k < count; k++) light += joint.n[k];
-    const wanted = gainLeast + SHAPE_ERROR * SHAPE_ERROR * light;
+    let beside = 0;
+    for (let k = 0; k < count; k++) {
+      const near =
+        apart(joint.x[k] - joint.centreX[count], joint.y[k] - joint.centreY[count]) < BESIDE_SIGMAS;
+      if (near) beside += joint.n[k];
+    }
+    const wanted = gainWanted(gainLeast, beside);
     let best = before + 0.5 * wanted;
     let found = false;
     const attempt = () => {
       joint.run(count + 1, offsetSpreadE);
       const likelihood = joint.logLikelihood();
-      let good = likelihood > best;
-      for (let k = 0; k <= count; k++) {
-        if (!(joint.n[k] > BRIGHTNESS_SIGMAS_LEAST * joint.sn[k])) good = false;
-        for (let m = 0; m < k; m++) {
-          const apart = Math.hypot(joint.x[k] - joint.x[m], joint.y[k] - joint.y[m]);
-          if (apart < CLOSEST_SIGMAS * spotSigmaPx) good = false;
-        }
-      }
-      if (!good) return;
+      if (!(likelihood > best && areApart(count + 1))) return;
       found = true;
       best = likelihood;
       bestX.set(joint.x);
@@ -212,12 +236,15 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
         table.x[i] = bestX[k];
         table.y[i] = bestY[k];
         table.n[i] = bestN[k];
+        if (apart(bestX[k] - bestX[count], bestY[k] - bestY[count]) < MERGED_SIGMAS) table.toldApart[i] = 1;
       }
       // What was split off an elongated spot left no peak: its response is the one that its light would have.
       const shown =
         response < RESPONSE_TRIED ? responseTo(bestX[count], bestY[count], bestN[count]) : response;
       const fresh = table.add(bestX[count], bestY[count], bestN[count], shown);
       table.group[fresh] = table.group[members[0]];
+      table.turn[fresh] = table.turn[members[0]];
+      table.toldApart[fresh] = 1;
       members[count] = fresh;
     }
     paintAll(table, members, found ? count + 1 : count, 1);

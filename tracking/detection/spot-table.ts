@@ -11,8 +11,14 @@ export class SpotTable {
   response = new Float64Array(256);
   /** Score of being longer one way than the other, see `elongation.ts`. */
   elongation = new Float64Array(256);
-  /** Number of the group that it is fitted with, -1 for none yet. */
+  /** Variance of the position that comes from the chance of being two spots, px^2. */
+  doubtX = new Float64Array(256);
+  doubtY = new Float64Array(256);
+  /** Number of the group that it is fitted with, -1 for none yet, and that group's turn. */
   group = new Int32Array(256);
+  turn = new Int32Array(256);
+  /** 1 where likelihood told it apart from a spot close by. */
+  toldApart = new Uint8Array(256);
   /** 0 once it turned out not to be a spot. */
   alive = new Uint8Array(256);
 
@@ -33,7 +39,11 @@ export class SpotTable {
     this.sn[i] = Infinity;
     this.response[i] = response;
     this.elongation[i] = 0;
+    this.doubtX[i] = 0;
+    this.doubtY[i] = 0;
     this.group[i] = -1;
+    this.turn[i] = 0;
+    this.toldApart[i] = 0;
     this.alive[i] = 1;
     return i;
   }
@@ -98,24 +108,24 @@ export class SpotTable {
 
   private grow(): void {
     const room = 2 * this.x.length;
-    const wider = (old: Float64Array) => {
-      const array = new Float64Array(room);
-      array.set(old);
-      return array;
+    const wider = <T extends { set(from: T): void }>(fresh: T, old: T): T => {
+      fresh.set(old);
+      return fresh;
     };
-    this.x = wider(this.x);
-    this.y = wider(this.y);
-    this.n = wider(this.n);
-    this.sx = wider(this.sx);
-    this.sy = wider(this.sy);
-    this.sn = wider(this.sn);
-    this.response = wider(this.response);
-    this.elongation = wider(this.elongation);
-    const group = new Int32Array(room);
-    group.set(this.group);
-    this.group = group;
-    const alive = new Uint8Array(room);
-    alive.set(this.alive);
-    this.alive = alive;
+    const numbers = (old: Float64Array<ArrayBuffer>) => wider(new Float64Array(room), old);
+    this.x = numbers(this.x);
+    this.y = numbers(this.y);
+    this.n = numbers(this.n);
+    this.sx = numbers(this.sx);
+    this.sy = numbers(this.sy);
+    this.sn = numbers(this.sn);
+    this.response = numbers(this.response);
+    this.elongation = numbers(this.elongation);
+    this.doubtX = numbers(this.doubtX);
+    this.doubtY = numbers(this.doubtY);
+    this.group = wider(new Int32Array(room), this.group);
+    this.turn = wider(new Int32Array(room), this.turn);
+    this.toldApart = wider(new Uint8Array(room), this.toldApart);
+    this.alive = wider(new Uint8Array(room), this.alive);
   }
 }

@@ -28,8 +28,8 @@ const ITERATIONS_MOST: i32 = 25;
 const STEP_DONE_PX: f64 = 0.006;
 const STEP_DONE_BRIGHTNESS: f64 = 0.003;
 /** After a step this small of a lone spot that the image's border leaves whole, nothing need be computed again. */
-const STEP_TINY_PX: f64 = 0.003;
-const STEP_TINY_BRIGHTNESS: f64 = 0.0015;
+const STEP_TINY_PX: f64 = 0.001;
+const STEP_TINY_BRIGHTNESS: f64 = 0.0005;
 const STEP_MOST_SIGMAS: f64 = 0.6;
 const BRIGHTNESS_KEPT: f64 = 0.25;
 const BRIGHTNESS_LEAST: f64 = 1;
@@ -63,7 +63,7 @@ export function runJointFit(fit: usize, count: i32, offsetSpread: f64): i32 {
     if (careful) copyValues(fit, s, true);
     const done = takeStep(fit, s, count);
     if (done && s.tiny) {
-      // The information would change by less than 1 in 500.
+      // The information would change by less than 1 in 1,000.
       converged = 1;
       break;
     }
