@@ -3,6 +3,7 @@ import { keepsFalseRate, studyFalseSpots } from '@/tracking/studies/false-spots'
 import { lineDensityTrials, summariseLineDensity } from '@/tracking/studies/line-density';
 import {
   goalsReached,
+  keepsMixedPromises,
   mixedFigures,
   studyMixedRecording,
   worstRuns,
@@ -51,7 +52,8 @@ const STUDIES: Record<string, Study> = {
           yield { ...about, seed, ...mixedFigures([run]), ...measured };
         }
         const figures = mixedFigures(runs);
-        yield { ...about, seeds: 'pooled', ...figures, reached: goalsReached(figures, snr) };
+        const kept = keepsMixedPromises(figures, snr);
+        yield { ...about, seeds: 'pooled', ...figures, reached: goalsReached(figures, snr), kept };
         yield { ...about, seeds: 'worst', worst: worstRuns(runs, snr) };
       }
     }

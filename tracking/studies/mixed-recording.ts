@@ -127,6 +127,15 @@ export function goalsReached(figures: MixedFigures, snr?: number): Record<string
   return Object.fromEntries(Object.entries(goalsFor(snr)).map(([name, miss]) => [name, miss(figures) <= 0]));
 }
 
+/**
+ * True where all goals are reached but that of the errors of all found spots: a spot that stands for two tracers,
+ * closer to each other than any single frame can tell, is far from both.
+ */
+export function keepsMixedPromises(figures: MixedFigures, snr?: number): boolean {
+  const { residualRms: _unresolvedToo, ...promised } = goalsReached(figures, snr);
+  return Object.values(promised).every(Boolean);
+}
+
 /** For each figure with a goal the recording that comes off worst. */
 export function worstRuns(
   runs: readonly MixedRun[],
