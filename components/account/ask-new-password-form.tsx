@@ -1,40 +1,28 @@
 'use client';
 
-import { useState, type FormEvent } from 'react';
+import { useActionState } from 'react';
 import { Button } from '@/components/ui/button';
 import { Field } from '@/components/ui/field';
 import { ErrorState } from '@/components/ui/page-states';
 
 export type AskResult = { ok: true } | { ok: false; detail: string };
 
-/** Asks for the link with which a new password is chosen. */
-export function AskNewPasswordForm({ ask }: { ask: (email: string) => Promise<AskResult> }) {
-  const [email, setEmail] = useState('');
-  const [askedFor, setAskedFor] = useState<string | null>(null);
-  const [problem, setProblem] = useState<string | null>(null);
-  const [busy, setBusy] = useState(false);
+/** What the form shows: nothing yet, whom a link was asked for, or why it was not. */
+export type AskState = { askedFor: string } | { email: string; problem: string } | null;
 
-  async function submit(event: FormEvent) {
-    event.preventDefault();
-    setBusy(true);
-    setProblem(null);
-    try {
-      const result = await ask(email);
-      if (result.ok) setAskedFor(email.trim());
-      else setProblem(result.detail);
-    } catch {
-      setProblem('The link to the server was lost. Try again.');
-    } finally {
-      setBusy(false);
-    }
-  }
-
-  if (askedFor !== null) {
+/** Asks for the link with which a new password is chosen; works before the page's script is there, too. */
+export function AskNewPasswordForm({
+  ask,
+}: {
+  ask: (before: AskState, form: FormData) => Promise<AskState>;
+}) {
+  const [state, act, busy] = useActionState(ask, null);
+  if (state && 'askedFor' in state) {
     return (
       <div role="status" className="flex flex-col gap-2">
         <p>
-          If <strong className="[overflow-wrap:anywhere]">{askedFor}</strong> has an account here, a mail with
-          a link is on its way. The link works once and for an hour.
+          If <strong className="[overflow-wrap:anywhere]">{state.askedFor}</strong> has an account here, a
+          mail with a link is on its way. The link works once and for an hour.
         </p>
         <p className="text-note text-ink-2">
           Nothing after some minutes? Look among unwanted mail, or ask your laboratory&rsquo;s administrator.
@@ -44,7 +32,7 @@ export function AskNewPasswordForm({ ask }: { ask: (email: string) => Promise<As
   }
   return (
     <form
-      onSubmit={submit}
+      action={act}
       className="flex w-full max-w-[320px] flex-col gap-3"
       aria-label="Ask for a new password"
     >
@@ -54,10 +42,9 @@ export function AskNewPasswordForm({ ask }: { ask: (email: string) => Promise<As
         type="email"
         autoComplete="username"
         required
-        value={email}
-        onChange={(event) => setEmail(event.target.value)}
+        defaultValue={state?.email}
       />
-      {problem ? <ErrorState live what={problem} /> : null}
+      {state ? <ErrorState live what={state.problem} /> : null}
       <div>
         <Button type="submit" kind="main" busy={busy}>
           Send me a link

@@ -43,7 +43,9 @@ export function ChoosePasswordForm({
   }
 
   return (
+    // Before the script is there a browser sends the form itself: by POST, so that nothing stands in the address.
     <form
+      method="post"
       onSubmit={submit}
       className="flex w-full max-w-[320px] flex-col gap-3"
       aria-label="Choose a password"

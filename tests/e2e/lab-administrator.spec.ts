@@ -223,7 +223,7 @@ describe('a lab administrator looks after accounts, files and work', () => {
     await page.goto('/lab/queue');
     await rowOf('check stored files').getByText('done').waitFor({ timeout: 30_000 });
     await page
-      .getByText(/\d s ago/)
+      .getByRole('cell', { name: /\d s ago$/ })
       .first()
       .waitFor();
   });
