@@ -148,6 +148,21 @@ describe('after a crash', () => {
     expect(await models().JobRun.count({ where: { subjectId: recordingId } })).toBe(1);
   });
 
+  it('expiry takes neither a finished upload nor one whose last byte has arrived', async () => {
+    const past = { expiresAt: new Date(Date.now() - 8 * 86_400_000) };
+    const finished = await begin();
+    await patch(finished.location, 0, bytes);
+    const arrived = await begin();
+    await patch(arrived.location, 0, bytes.subarray(0, 299_999));
+    await appendFile(arrivingFile(arrived.id), bytes.subarray(299_999));
+    await models().Upload.update(past, { where: { id: [finished.id, arrived.id] } });
+    await reconcileUploads();
+    for (const { recordingId } of [finished, arrived]) {
+      expect((await recording(recordingId)).state).toBe('checking');
+      expect(readFileSync(stackPath(recordingId)).equals(bytes)).toBe(true);
+    }
+  });
+
   it('an upload that got bytes since the list was made is not taken for an expired one', async () => {
     const [waiting, living] = [await begin(), await begin()];
     const expired = { expiresAt: new Date(Date.now() - 1000) };
