@@ -25,8 +25,12 @@ export const BRIGHTNESS_UNTOLD: BrightnessStatistics = {
 const LAG_FRAMES = 8;
 const SAMPLES_LEAST = 30;
 const SAMPLES_MOST = 20_000;
-/** Tracers must differ by so much of what spots of one tracer differ by, or the cue is left alone. */
+/**
+ * Tracers must differ by so much of what spots of one tracer differ by, or the cue is left alone;
+ * and by more than three standard errors (a variance from n squares by their median: 2.4 / sqrt n).
+ */
 const CONTRAST_LEAST = 0.15;
+const CONTRAST_ERROR = 3 * 2.4;
 /** No brightness is known better than this (relative): pixels differ, the sheet ripples. */
 const ERROR_LEAST = 0.02;
 const CROWDED = SPOT_OVERLAP | SPOT_ELONGATED;
@@ -76,7 +80,8 @@ export function measureBrightness(spots: Spots, before: Int32Array): BrightnessS
   const total = medianOf(values, n) / MEDIAN_OF_SQUARE;
   const fast = medianOf(change, changes) / MEDIAN_OF_SQUARE;
   const variance = total - 0.5 * fast;
-  if (!(variance > CONTRAST_LEAST * 0.5 * fast) || variance < ERROR_LEAST * ERROR_LEAST) {
+  const contrastLeast = CONTRAST_LEAST + CONTRAST_ERROR / Math.sqrt(changes);
+  if (!(variance > contrastLeast * 0.5 * fast) || variance < ERROR_LEAST * ERROR_LEAST) {
     return BRIGHTNESS_UNTOLD;
   }
   const slow = slowChanges >= SAMPLES_LEAST ? medianOf(slowChange, slowChanges) / MEDIAN_OF_SQUARE : fast;
