@@ -6,7 +6,7 @@ import { FileChecks } from '@/components/lab/file-checks';
 import { MarginNote } from '@/components/ui/margin-note';
 import { ProgressThread } from '@/components/ui/progress-thread';
 import { Facts, Section } from '@/components/ui/sheet';
-import { formatBytes, formatBytesOf } from '@/lib/format/bytes';
+import { formatBytes } from '@/lib/format/bytes';
 import { formatCount } from '@/lib/format/count';
 import { labStorage } from '@/models/queries/storage';
 import { LabFrame } from '../lab-frame';
@@ -20,10 +20,13 @@ export default async function StoragePage() {
   const used = bytes + arrivingBytes;
   return (
     <LabFrame viewer={viewer} tab="storage" margin={<StoreNotes used={used} quotaBytes={quotaBytes} />}>
-      <Section title="Kept" count={`${formatBytesOf(used, quotaBytes)} that this laboratory may keep`}>
+      <Section
+        title="Kept"
+        count={`${formatBytes(used)} of ${formatBytes(quotaBytes)} that this laboratory may keep`}
+      >
         <div className="py-2">
           <ProgressThread
-            stages={[{ beads: BEADS, filled: Math.min(BEADS, (BEADS * used) / quotaBytes) }]}
+            stages={[{ beads: BEADS, filled: beadsOf(used / quotaBytes) }]}
             label={`${percentOf(used, quotaBytes)} of what may be kept`}
             tone={used > NEARLY * quotaBytes ? 'amber' : 'ink'}
           />
@@ -50,6 +53,8 @@ const BEADS = 20;
 /** From this share on the thread is amber and the margin says so. */
 const NEARLY = 0.9;
 
+// In halves, rounded down: a bead that begins to fill says nothing of a thousandth.
+const beadsOf = (share: number) => Math.min(BEADS, Math.floor(2 * BEADS * share) / 2);
 const percentOf = (part: number, whole: number) => `${Math.round((100 * part) / whole)} %`;
 
 function StoreNotes({ used, quotaBytes }: { used: number; quotaBytes: number }) {
