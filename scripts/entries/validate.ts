@@ -10,6 +10,7 @@ import {
   type MixedRun,
 } from '@/tracking/studies/mixed-recording';
 import { MIXED_SIZES, type MixedSet } from '@/tracking/simulate/mixed-scene';
+import { productionFormTrials, type TransientKind } from '@/tracking/studies/production-forms';
 import { keepsPromises, studyStandardRecording } from '@/tracking/studies/standard-recording';
 import { steadyTangleCoverage } from '@/tracking/studies/steady-tangle';
 
@@ -24,6 +25,11 @@ const MIXED_SEEDS = [1, 2, 3, 4, 5];
 /** So many make a rate known to 6 %. */
 const FALSE_SPOTS_LEAST = 300;
 const TANGLE_SEEDS = Array.from({ length: 12 }, (_, i) => i + 1);
+const TRANSIENT_SEEDS = Array.from({ length: 100 }, (_, i) => i + 1);
+/** Of 100 transients: the right form named at least so often, or a wrong one at most so often. */
+const RIGHT_LEAST = 90;
+const UNDECIDED_LEAST = 80;
+const WRONG_MOST = 5;
 const CAMPAIGN_SEEDS = Array.from({ length: 200 }, (_, i) => i + 1);
 /** Line densities from a slow counterflow to a dense tangle, m^-2. */
 const LINE_DENSITIES = [1e7, 3e7, 1e8];
@@ -71,6 +77,15 @@ const STUDIES: Record<string, Study> = {
     for (const density of LINE_DENSITIES) {
       for (const summary of summariseLineDensity(density, lineDensityTrials(density, TANGLE_SEEDS))) {
         yield { ...summary };
+      }
+    }
+  },
+  /** Which production form is named for transients of each, clean ones and poor ones. */
+  *'production-forms'() {
+    for (const kind of ['clean growth', 'poor growth'] satisfies TransientKind[]) {
+      for (const row of productionFormTrials(kind, TRANSIENT_SEEDS)) {
+        const told = kind === 'clean growth' ? row.right >= RIGHT_LEAST : row.undecided >= UNDECIDED_LEAST;
+        yield { ...row, kept: told && row.wrong <= WRONG_MOST };
       }
     }
   },
