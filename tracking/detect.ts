@@ -39,8 +39,8 @@ const SECOND_LOOK_SHARE = 0.1;
 /** How far the background near a spot may differ from the model: a share of it and a floor, electrons. */
 const OFFSET_SHARE = 0.1;
 const OFFSET_LEAST_E = 0.5;
-/** Score of elongation that marks a spot: noise exceeds it once in 10^5. */
-const ELONGATION_FLAGGED = 23;
+/** Score of elongation that marks a spot: noise exceeds it 6 times in 10,000 (chi-squared, 2 degrees of freedom). */
+const ELONGATION_FLAGGED = 15;
 
 /** Finds the spots of single frames; what it finds depends on the frame and the model alone. */
 export interface Detector {
@@ -205,7 +205,8 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
     const margin = 2 * sigma;
     if (x < margin || y < margin || x > width - 1 - margin || y > height - 1 - margin) flags |= SPOT_EDGE;
     if (table.near(i, OVERLAP_SIGMAS * sigma, near) > 0) flags |= SPOT_OVERLAP;
-    if (table.elongation[i] > ELONGATION_FLAGGED) flags |= SPOT_ELONGATED;
+    // A streak is as likely to be taken for two close spots: these are marked as well.
+    if (Math.max(table.elongation[i], table.elongationAsOne[i]) > ELONGATION_FLAGGED) flags |= SPOT_ELONGATED;
     if (saturationCounts < Infinity && touchesSaturation(x, y)) flags |= SPOT_SATURATED;
     return flags;
   };

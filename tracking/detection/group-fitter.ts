@@ -176,6 +176,27 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
     return true;
   };
 
+  /** Adds the spot of the best fit behind the members and moves those to where they are beside it. */
+  const addFound = (table: SpotTable, members: Int32Array, count: number, response: number) => {
+    // What was split off an elongated spot left no peak: its response is the one that its light would have.
+    const shown = response < RESPONSE_TRIED ? responseTo(bestX[count], bestY[count], bestN[count]) : response;
+    const fresh = table.add(bestX[count], bestY[count], bestN[count], shown);
+    table.group[fresh] = table.group[members[0]];
+    table.turn[fresh] = table.turn[members[0]];
+    table.toldApart[fresh] = 1;
+    for (let k = 0; k < count; k++) {
+      const i = members[k];
+      table.x[i] = bestX[k];
+      table.y[i] = bestY[k];
+      table.n[i] = bestN[k];
+      if (apart(bestX[k] - bestX[count], bestY[k] - bestY[count]) >= MERGED_SIGMAS) continue;
+      table.toldApart[i] = 1;
+      table.elongationAsOne[i] = Math.max(table.elongationAsOne[i], table.elongation[i]);
+      table.elongationAsOne[fresh] = Math.max(table.elongationAsOne[fresh], table.elongation[i]);
+    }
+    members[count] = fresh;
+  };
+
   /** Tries one more spot near those fitted; true when the data ask for it. */
   const tryOneMore = (table: SpotTable, members: Int32Array, count: number, gainLeast: number): boolean => {
     const peak = joint.look();
@@ -230,23 +251,7 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
       joint.n[count] = joint.n[split];
       attempt();
     }
-    if (found) {
-      for (let k = 0; k < count; k++) {
-        const i = members[k];
-        table.x[i] = bestX[k];
-        table.y[i] = bestY[k];
-        table.n[i] = bestN[k];
-        if (apart(bestX[k] - bestX[count], bestY[k] - bestY[count]) < MERGED_SIGMAS) table.toldApart[i] = 1;
-      }
-      // What was split off an elongated spot left no peak: its response is the one that its light would have.
-      const shown =
-        response < RESPONSE_TRIED ? responseTo(bestX[count], bestY[count], bestN[count]) : response;
-      const fresh = table.add(bestX[count], bestY[count], bestN[count], shown);
-      table.group[fresh] = table.group[members[0]];
-      table.turn[fresh] = table.turn[members[0]];
-      table.toldApart[fresh] = 1;
-      members[count] = fresh;
-    }
+    if (found) addFound(table, members, count, response);
     paintAll(table, members, found ? count + 1 : count, 1);
     return found;
   };

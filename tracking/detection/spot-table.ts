@@ -11,6 +11,8 @@ export class SpotTable {
   response = new Float64Array(256);
   /** Score of being longer one way than the other, see `elongation.ts`. */
   elongation = new Float64Array(256);
+  /** The same of the single spot that it was part of before it was told apart from a close one, or 0. */
+  elongationAsOne = new Float64Array(256);
   /** Variance of the position that comes from the chance of being two spots, px^2. */
   doubtX = new Float64Array(256);
   doubtY = new Float64Array(256);
@@ -39,6 +41,7 @@ export class SpotTable {
     this.sn[i] = Infinity;
     this.response[i] = response;
     this.elongation[i] = 0;
+    this.elongationAsOne[i] = 0;
     this.doubtX[i] = 0;
     this.doubtY[i] = 0;
     this.group[i] = -1;
@@ -121,6 +124,7 @@ export class SpotTable {
     this.sn = numbers(this.sn);
     this.response = numbers(this.response);
     this.elongation = numbers(this.elongation);
+    this.elongationAsOne = numbers(this.elongationAsOne);
     this.doubtX = numbers(this.doubtX);
     this.doubtY = numbers(this.doubtY);
     this.group = wider(new Int32Array(room), this.group);
