@@ -22,6 +22,8 @@ import { RolesDialog } from './roles-dialog';
 
 const SHAPE: ListShape = { sorts: ['name', 'createdAt'], defaultSort: 'name', filters: ['q'] };
 
+const rolesOf = ({ roles }: MemberView) => roles.map((role) => ROLE_NAMES[role]).join(', ');
+
 /** How the mail with an invitation fares. */
 function mailWords({ state, delayed }: NonNullable<MemberView['invitationMail']>): string {
   if (delayed) return state === 'failed' ? 'mail could not be delivered' : 'mail delayed, tried again';
@@ -63,7 +65,7 @@ export function PeopleTable({ mayChange, viewerId }: { mayChange: boolean; viewe
               <thead>
                 <tr>
                   <HeadCell sort={list.sort('name')}>Name</HeadCell>
-                  <HeadCell>Roles</HeadCell>
+                  <HeadCell narrow="hide">Roles</HeadCell>
                   <HeadCell narrow="hide" sort={list.sort('createdAt')}>
                     Member since
                   </HeadCell>
@@ -75,9 +77,12 @@ export function PeopleTable({ mayChange, viewerId }: { mayChange: boolean; viewe
                   <Row key={member.id}>
                     <Cell head>
                       {member.person.name}
-                      <span className="block text-small text-ink-3">{member.person.email}</span>
+                      <span className="block text-small text-ink-3 [overflow-wrap:anywhere]">
+                        {member.person.email}
+                      </span>
+                      <span className="block text-small text-ink-2 hand:hidden">{rolesOf(member)}</span>
                     </Cell>
-                    <Cell>{member.roles.map((role) => ROLE_NAMES[role]).join(', ')}</Cell>
+                    <Cell narrow="hide">{rolesOf(member)}</Cell>
                     <Cell quiet narrow="hide">
                       <Moment at={member.createdAt} />
                       {member.invitedUntil ? (

@@ -1,7 +1,7 @@
 'use client';
 
 import Link from 'next/link';
-import { useId, useRef, useState, type KeyboardEvent, type ReactNode } from 'react';
+import { useEffect, useId, useRef, useState, type KeyboardEvent, type ReactNode } from 'react';
 
 const tabClasses = (current: boolean) =>
   `relative shrink-0 whitespace-nowrap pt-[6px] pb-2 no-underline transition-colors duration-quick hover:text-ink ${
@@ -19,8 +19,16 @@ export interface TabLink {
 
 /** Places inside a page that have addresses of their own: a thread whose bead marks the current one. */
 export function TabLinks({ label, tabs }: { label: string; tabs: readonly TabLink[] }) {
+  const nav = useRef<HTMLElement>(null);
+  const current = tabs.find((tab) => tab.current)?.href;
+  // On a phone the strip is longer than the window: the current place must not be hidden beyond its edge.
+  useEffect(() => {
+    const link = nav.current?.querySelector<HTMLElement>('[aria-current]');
+    const strip = link?.parentElement;
+    if (link && strip) strip.scrollLeft = link.offsetLeft - (strip.clientWidth - link.offsetWidth) / 2;
+  }, [current]);
   return (
-    <nav aria-label={label} className="print:hidden">
+    <nav ref={nav} aria-label={label} className="print:hidden">
       <Strip>
         {tabs.map((tab) => (
           <Link

@@ -92,7 +92,7 @@ describe('a lab administrator looks after the people', () => {
     await rowOf('Ada Reed').getByRole('button', { name: 'Change roles' }).click();
     await page.getByRole('dialog').getByLabel('Analyst').check();
     await page.getByRole('button', { name: 'Save roles' }).click();
-    await rowOf('Ada Reed').getByText('Annotator, Analyst').waitFor();
+    await rowOf('Ada Reed').getByRole('cell', { name: 'Annotator, Analyst' }).waitFor();
     await invited.page.goto('/lab/audit');
     await invited.page.waitForURL((url) => url.pathname === '/sign-in');
   });
