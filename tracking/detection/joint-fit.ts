@@ -8,6 +8,10 @@ const ITERATIONS_MOST = 25;
 /** A step this small leaves an error far below the standard error of any spot that is found. */
 const STEP_DONE_PX = 0.006;
 const STEP_DONE_BRIGHTNESS = 0.003;
+/** Neighbours creep towards their places in small steps: theirs must be smaller by this. */
+const STEP_DONE_TOGETHER = 0.25;
+/** Likelihoods that differ by less are equal: that of compiled fits is known to about this. */
+const LIKELIHOOD_NOISE = 1e-3;
 /** No spot moves farther per step than this many of its own widths, or loses more than this of its light. */
 const STEP_MOST_SIGMAS = 0.6;
 const BRIGHTNESS_KEPT = 0.25;
@@ -53,7 +57,7 @@ export class JointFit extends FitWork {
       this.keep();
       const done = this.move();
       const next = expectLight(this, window, careful);
-      if (careful && next < objective - 1e-9) {
+      if (careful && next < objective - LIKELIHOOD_NOISE) {
         this.restore();
         damping = Math.max(0.01, 8 * damping);
         if (damping > 1e6) break;
@@ -135,14 +139,15 @@ export class JointFit extends FitWork {
   /** Applies the step, shortened where it would leap; true when nothing moved to speak of. */
   private move(): boolean {
     const most = STEP_MOST_SIGMAS * this.spotSigmaPx;
+    const small = this.count > 1 ? STEP_DONE_TOGETHER : 1;
     let done = true;
     this.offset += this.step[0];
     for (let s = 0; s < this.count; s++) {
       const dx = Math.max(-most, Math.min(most, this.step[3 * s + 1]));
       const dy = Math.max(-most, Math.min(most, this.step[3 * s + 2]));
       const n = Math.max(BRIGHTNESS_LEAST, BRIGHTNESS_KEPT * this.n[s], this.n[s] + this.step[3 * s + 3]);
-      if (Math.abs(dx) > STEP_DONE_PX || Math.abs(dy) > STEP_DONE_PX) done = false;
-      if (Math.abs(n - this.n[s]) > STEP_DONE_BRIGHTNESS * n) done = false;
+      if (Math.abs(dx) > small * STEP_DONE_PX || Math.abs(dy) > small * STEP_DONE_PX) done = false;
+      if (Math.abs(n - this.n[s]) > small * STEP_DONE_BRIGHTNESS * n) done = false;
       this.x[s] = Math.max(this.boxX[s], Math.min(this.boxX[s] + this.side - 1, this.x[s] + dx));
       this.y[s] = Math.max(this.boxY[s], Math.min(this.boxY[s] + this.side - 1, this.y[s] + dy));
       this.n[s] = n;

@@ -6,7 +6,7 @@ import { laneSum } from './joint-fit-sums';
 /** Expected light is never taken for less, electrons. */
 export const EXPECTED_LEAST: f32 = 0.05;
 
-/** Shares of light of all spots in their boxes; zero where the box leaves the window. */
+/** Shares of light of all spots in their boxes; zero behind the box and where it leaves the window. */
 export function shareJointFit(fit: usize, count: i32): void {
   const s = settingsOf(fit);
   const room = s.shareRoom;
@@ -19,9 +19,9 @@ export function shareJointFit(fit: usize, count: i32): void {
     const along = shareAt(fit, room, i, 0);
     const next = (<usize>room) << 2;
     const sigma = <f32>s.sigma;
-    shareLight(x, sigma, s.side, -boxX, s.width - boxX, along, along + next, along + 2 * next);
+    shareLight(x, sigma, s.side, -boxX, min(s.side, s.width - boxX), along, along + next, along + 2 * next);
     const down = along + 3 * next;
-    shareLight(y, sigma, s.side, -boxY, s.height - boxY, down, down + next, down + 2 * next);
+    shareLight(y, sigma, s.side, -boxY, min(s.side, s.height - boxY), down, down + next, down + 2 * next);
   }
 }
 

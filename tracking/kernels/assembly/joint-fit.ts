@@ -27,13 +27,13 @@ import { roundPx } from './joint-fit-window';
 const ITERATIONS_MOST: i32 = 25;
 const STEP_DONE_PX: f64 = 0.006;
 const STEP_DONE_BRIGHTNESS: f64 = 0.003;
+const STEP_DONE_TOGETHER: f64 = 0.25;
 /** After a step this small of a lone spot that the image's border leaves whole, nothing need be computed again. */
 const STEP_TINY_PX: f64 = 0.001;
 const STEP_TINY_BRIGHTNESS: f64 = 0.0005;
 const STEP_MOST_SIGMAS: f64 = 0.6;
 const BRIGHTNESS_KEPT: f64 = 0.25;
 const BRIGHTNESS_LEAST: f64 = 1;
-/** Likelihoods in single precision are known to about this. */
 const LIKELIHOOD_NOISE: f64 = 1e-3;
 
 /**
@@ -147,6 +147,7 @@ function copyValues(fit: usize, s: Settings, aside: bool): void {
 /** Applies the step, shortened where it would leap; true when nothing moved to speak of. */
 function takeStep(fit: usize, s: Settings, count: i32): bool {
   const most = STEP_MOST_SIGMAS * s.sigma;
+  const small = count > 1 ? STEP_DONE_TOGETHER : 1;
   let done = true;
   s.tiny = count === 1 && s.width === s.side && s.height === s.side;
   s.offset += load<f64>(fit + STEP);
@@ -157,8 +158,8 @@ function takeStep(fit: usize, s: Settings, count: i32): bool {
     const dy = max(-most, min(most, load<f64>(step + 16)));
     const before = load<f64>(fit + N + at);
     const n = max(max(BRIGHTNESS_LEAST, BRIGHTNESS_KEPT * before), before + load<f64>(step + 24));
-    if (!(abs(dx) <= STEP_DONE_PX && abs(dy) <= STEP_DONE_PX)) done = false;
-    if (!(abs(n - before) <= STEP_DONE_BRIGHTNESS * n)) done = false;
+    if (!(abs(dx) <= small * STEP_DONE_PX && abs(dy) <= small * STEP_DONE_PX)) done = false;
+    if (!(abs(n - before) <= small * STEP_DONE_BRIGHTNESS * n)) done = false;
     if (!(abs(dx) <= STEP_TINY_PX && abs(dy) <= STEP_TINY_PX)) s.tiny = false;
     if (!(abs(n - before) <= STEP_TINY_BRIGHTNESS * n)) s.tiny = false;
     const left = <f64>(load<i32>(fit + BOX_X + ((<usize>i) << 2)) + s.x0);
