@@ -26,6 +26,8 @@ const REL = 5e-3;
 // A stated error holds the chance that the spot is two, an exponential of a difference of likelihoods of some
 // hundreds, in which 32-bit rounding shows.
 const ERROR_REL = 0.03;
+// Responses have noise 1; those of spots found in what others left depend on where these fits stopped.
+const SNR_ABS = 0.1;
 
 function expectSameSpots(fast: Spots, plain: Spots): void {
   expect(fast.count).toBe(plain.count);
@@ -38,7 +40,7 @@ function expectSameSpots(fast: Spots, plain: Spots): void {
   expect(worst(fast.sxPx, plain.sxPx, (i) => plain.sxPx[i])).toBeLessThan(ERROR_REL);
   expect(worst(fast.syPx, plain.syPx, (i) => plain.syPx[i])).toBeLessThan(ERROR_REL);
   expect(worst(fast.brightness, plain.brightness, (i) => plain.brightness[i])).toBeLessThan(REL);
-  expect(worst(fast.snr, plain.snr, (i) => plain.snr[i])).toBeLessThan(REL);
+  expect(worst(fast.snr, plain.snr, () => 1)).toBeLessThan(SNR_ABS);
 }
 
 describe.each(['full', 'quick'] as const)(
