@@ -58,8 +58,6 @@ export class Settings {
   stride: i32 = 0;
   /** Spots of the fit made last. */
   count: i32 = 0;
-  /** Whether the step made last was too small to change weights and errors. */
-  tiny: bool = false;
   // Arrays of the window: f32 per pixel, `used` all ones or all zeros.
   data: usize = 0;
   fixed: usize = 0;

@@ -1,5 +1,6 @@
 import { PEAK, settingsOf, Settings } from './joint-fit-layout';
-import { paintExpected } from './joint-fit-expectation';
+import { placeBoxes } from './joint-fit';
+import { paintExpected, shareJointFit } from './joint-fit-expectation';
 
 // The same as in `tracking/detection/second-look.ts`, which says why.
 const SHAPE_ERROR: f32 = 0.08;
@@ -14,6 +15,9 @@ const DARK_VARIANCE: f32 = 1e-3;
  */
 export function peakOfResidual(fit: usize, squares: f64): void {
   const s = settingsOf(fit);
+  // As the spots are painted: in boxes around where they are now.
+  placeBoxes(fit, s, s.count);
+  shareJointFit(fit, s.count);
   paintExpected(fit, s.count, 0);
   writeNoise(s);
   correlateRows(s);

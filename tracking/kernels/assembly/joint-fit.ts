@@ -28,9 +28,6 @@ const ITERATIONS_MOST: i32 = 25;
 const STEP_DONE_PX: f64 = 0.006;
 const STEP_DONE_BRIGHTNESS: f64 = 0.003;
 const STEP_DONE_TOGETHER: f64 = 0.25;
-/** After a step this small of a lone spot that the image's border leaves whole, nothing need be computed again. */
-const STEP_TINY_PX: f64 = 0.001;
-const STEP_TINY_BRIGHTNESS: f64 = 0.0005;
 const STEP_MOST_SIGMAS: f64 = 0.6;
 const BRIGHTNESS_KEPT: f64 = 0.25;
 const BRIGHTNESS_LEAST: f64 = 1;
@@ -62,11 +59,6 @@ export function runJointFit(fit: usize, count: i32, offsetSpread: f64): i32 {
     }
     if (careful) copyValues(fit, s, true);
     const done = takeStep(fit, s, count);
-    if (done && s.tiny) {
-      // The information would change by less than 1 in 1,000.
-      converged = 1;
-      break;
-    }
     const next = expectJointFit(fit, s, careful);
     if (careful && !(next >= objective - LIKELIHOOD_NOISE)) {
       copyValues(fit, s, false);
@@ -105,7 +97,7 @@ function expectJointFit(fit: usize, s: Settings, wanted: bool): f64 {
 }
 
 /** First column and row of each spot's box in the window; a box that misses the window stands beside it. */
-function placeBoxes(fit: usize, s: Settings, count: i32): void {
+export function placeBoxes(fit: usize, s: Settings, count: i32): void {
   for (let i: i32 = 0; i < count; i++) {
     const at = (<usize>i) << 3;
     const x = roundPx(load<f64>(fit + X + at)) - s.reach - s.x0;
@@ -149,7 +141,6 @@ function takeStep(fit: usize, s: Settings, count: i32): bool {
   const most = STEP_MOST_SIGMAS * s.sigma;
   const small = count > 1 ? STEP_DONE_TOGETHER : 1;
   let done = true;
-  s.tiny = count === 1 && s.width === s.side && s.height === s.side;
   s.offset += load<f64>(fit + STEP);
   for (let i: i32 = 0; i < count; i++) {
     const at = (<usize>i) << 3;
@@ -160,8 +151,6 @@ function takeStep(fit: usize, s: Settings, count: i32): bool {
     const n = max(max(BRIGHTNESS_LEAST, BRIGHTNESS_KEPT * before), before + load<f64>(step + 24));
     if (!(abs(dx) <= small * STEP_DONE_PX && abs(dy) <= small * STEP_DONE_PX)) done = false;
     if (!(abs(n - before) <= small * STEP_DONE_BRIGHTNESS * n)) done = false;
-    if (!(abs(dx) <= STEP_TINY_PX && abs(dy) <= STEP_TINY_PX)) s.tiny = false;
-    if (!(abs(n - before) <= STEP_TINY_BRIGHTNESS * n)) s.tiny = false;
     const left = <f64>(load<i32>(fit + BOX_X + ((<usize>i) << 2)) + s.x0);
     const top = <f64>(load<i32>(fit + BOX_Y + ((<usize>i) << 2)) + s.y0);
     const last = <f64>(s.side - 1);
