@@ -30,32 +30,50 @@ export function closeApproaches(
   const root = roots(links.before);
   const shadows = shadowPoints(table, links, beyondFrames);
   const meetings = new Meetings();
-  const local = new FrameList();
+  const near2 = nearPx * nearPx;
+  const { xPx, yPx } = table;
+  const meet = (a: number, b: number, frame: number) => {
+    if (root[a] < root[b]) meetings.add(root[a], root[b], a, b, frame);
+    else if (root[b] < root[a]) meetings.add(root[b], root[a], b, a, frame);
+  };
   let shadow = 0;
-  let s = 0;
-  while (s < table.count || shadow < shadows.frame.length) {
-    const frame = Math.min(
-      s < table.count ? table.frame[s] : Infinity,
-      shadow < shadows.frame.length ? shadows.frame[shadow] : Infinity,
-    );
-    local.clear();
-    for (; s < table.count && table.frame[s] === frame; s++) local.push(table.xPx[s], table.yPx[s], s);
-    for (; shadow < shadows.frame.length && shadows.frame[shadow] === frame; shadow++) {
-      local.insert(shadows.xPx[shadow], shadows.yPx[shadow], shadows.spot[shadow]);
+  for (let from = 0, to = 0; from < table.count; from = to) {
+    const frame = table.frame[from];
+    while (to < table.count && table.frame[to] === frame) to++;
+    for (let a = from; a < to; a++) {
+      const x = xPx[a];
+      const y = yPx[a];
+      for (let b = a + 1; b < to && yPx[b] - y < nearPx; b++) {
+        const dx = xPx[b] - x;
+        const dy = yPx[b] - y;
+        if (dx * dx + dy * dy < near2) meet(a, b, frame);
+      }
     }
-    for (let i = 0; i < local.count; i++) {
-      for (let j = i + 1; j < local.count && local.y[j] - local.y[i] < nearPx; j++) {
-        const dx = local.x[j] - local.x[i];
-        const dy = local.y[j] - local.y[i];
-        if (dx * dx + dy * dy >= nearPx * nearPx) continue;
-        const a = local.spot[i];
-        const b = local.spot[j];
-        if (root[a] < root[b]) meetings.add(root[a], root[b], a, b, frame);
-        else if (root[b] < root[a]) meetings.add(root[b], root[a], b, a, frame);
+    // Two tracks without a spot here have nothing to be mistaken in: a shadow meets spots only.
+    while (shadow < shadows.count && shadows.frame[shadow] < frame) shadow++;
+    for (; shadow < shadows.count && shadows.frame[shadow] === frame; shadow++) {
+      const x = shadows.xPx[shadow];
+      const y = shadows.yPx[shadow];
+      for (let b = firstBelow(yPx, from, to, y - nearPx); b < to && yPx[b] - y < nearPx; b++) {
+        const dx = xPx[b] - x;
+        const dy = yPx[b] - y;
+        if (dx * dx + dy * dy < near2) meet(shadows.spot[shadow], b, frame);
       }
     }
   }
   return meetings.approaches(APART_FRAMES);
+}
+
+/** First of the spots `from .. to - 1`, which are in order of y, whose y is at least so much. */
+function firstBelow(yPx: Float32Array, from: number, to: number, least: number): number {
+  let low = from;
+  let high = to;
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (yPx[middle] < least) low = middle + 1;
+    else high = middle;
+  }
+  return low;
 }
 
 /** First spot of the track of each spot. */
@@ -66,88 +84,53 @@ function roots(before: Int32Array): Int32Array {
 }
 
 interface Shadows {
-  frame: ArrayLike<number>;
-  xPx: ArrayLike<number>;
-  yPx: ArrayLike<number>;
-  spot: ArrayLike<number>;
+  count: number;
+  frame: Int32Array;
+  xPx: Float64Array;
+  yPx: Float64Array;
+  spot: Int32Array;
 }
 
 /** Where tracks are thought to be in frames in which they have no spot, by frame. */
 function shadowPoints(table: SpotTable, { before, after }: TrackLinks, beyond: number): Shadows {
+  const first = table.count > 0 ? table.frame[0] : 0;
   const last = table.count > 0 ? table.frame[table.count - 1] : 0;
-  const frame: number[] = [];
-  const xPx: number[] = [];
-  const yPx: number[] = [];
-  const spot: number[] = [];
-  const add = (f: number, x: number, y: number, s: number) => {
-    frame.push(f);
-    xPx.push(x);
-    yPx.push(y);
-    spot.push(s);
+  // Counted first, frame by frame, then written where the counts say.
+  const place = new Int32Array(last - first + 2);
+  eachShadow((frame) => place[frame - first + 1]++);
+  for (let f = 1; f < place.length; f++) place[f] += place[f - 1];
+  const count = place[place.length - 1];
+  const shadows: Shadows = {
+    count,
+    frame: new Int32Array(count),
+    xPx: new Float64Array(count),
+    yPx: new Float64Array(count),
+    spot: new Int32Array(count),
   };
-  for (let s = 0; s < table.count; s++) {
-    const at = table.frame[s];
-    const b = before[s];
-    if (b < 0) {
-      for (let f = Math.max(table.frame[0], at - beyond); f < at; f++) add(f, table.xPx[s], table.yPx[s], s);
-    } else {
-      const gap = at - table.frame[b];
-      for (let k = 1; k < gap; k++) {
-        const share = k / gap;
-        const x = table.xPx[b] + share * (table.xPx[s] - table.xPx[b]);
-        add(table.frame[b] + k, x, table.yPx[b] + share * (table.yPx[s] - table.yPx[b]), s);
+  eachShadow((frame, s, from, share) => {
+    const k = place[frame - first]++;
+    shadows.frame[k] = frame;
+    shadows.xPx[k] = table.xPx[from] + share * (table.xPx[s] - table.xPx[from]);
+    shadows.yPx[k] = table.yPx[from] + share * (table.yPx[s] - table.yPx[from]);
+    shadows.spot[k] = s;
+  });
+  return shadows;
+
+  /** Calls `take` with the frame, the spot of the track, the one before the gap and the share of the gap. */
+  function eachShadow(take: (frame: number, s: number, from: number, share: number) => void): void {
+    for (let s = 0; s < table.count; s++) {
+      const at = table.frame[s];
+      const b = before[s];
+      if (b < 0) {
+        for (let f = Math.max(first, at - beyond); f < at; f++) take(f, s, s, 0);
+      } else {
+        for (let f = table.frame[b] + 1; f < at; f++) {
+          take(f, s, b, (f - table.frame[b]) / (at - table.frame[b]));
+        }
       }
+      if (after[s] >= 0) continue;
+      for (let f = at + 1; f <= Math.min(last, at + beyond); f++) take(f, s, s, 0);
     }
-    if (after[s] >= 0) continue;
-    for (let f = at + 1; f <= Math.min(last, at + beyond); f++) add(f, table.xPx[s], table.yPx[s], s);
-  }
-  const order = Uint32Array.from(frame.keys()).sort((a, b) => frame[a] - frame[b] || a - b);
-  return {
-    frame: Array.from(order, (k) => frame[k]),
-    xPx: Array.from(order, (k) => xPx[k]),
-    yPx: Array.from(order, (k) => yPx[k]),
-    spot: Array.from(order, (k) => spot[k]),
-  };
-}
-
-/** Points of one frame by y. */
-class FrameList {
-  count = 0;
-  x = new Float64Array(256);
-  y = new Float64Array(256);
-  spot = new Int32Array(256);
-
-  clear(): void {
-    this.count = 0;
-  }
-
-  push(x: number, y: number, spot: number): void {
-    if (this.count === this.x.length) {
-      for (const name of ['x', 'y'] as const) {
-        const wider = new Float64Array(2 * this.count);
-        wider.set(this[name]);
-        this[name] = wider;
-      }
-      const wider = new Int32Array(2 * this.count);
-      wider.set(this.spot);
-      this.spot = wider;
-    }
-    this.x[this.count] = x;
-    this.y[this.count] = y;
-    this.spot[this.count++] = spot;
-  }
-
-  insert(x: number, y: number, spot: number): void {
-    this.push(x, y, spot);
-    let at = this.count - 1;
-    for (; at > 0 && this.y[at - 1] > y; at--) {
-      this.x[at] = this.x[at - 1];
-      this.y[at] = this.y[at - 1];
-      this.spot[at] = this.spot[at - 1];
-    }
-    this.x[at] = x;
-    this.y[at] = y;
-    this.spot[at] = spot;
   }
 }
 

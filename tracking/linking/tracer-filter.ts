@@ -158,10 +158,13 @@ export class TracerFilter {
     const squared = dx * dx + dy * dy;
     const narrow = values[at + PP] + variance;
     const wide = narrow + this.jumpVariance;
-    // Did the velocity jump? Then the past says little of it.
-    const plain = ((1 - motion.jumpShare) * Math.exp((-0.5 * squared) / narrow)) / narrow;
-    const jumped = (motion.jumpShare * Math.exp((-0.5 * squared) / wide)) / wide;
-    const extra = (plain + jumped > 0 ? jumped / (plain + jumped) : 1) * this.jumpVariance;
+    // Did the velocity jump? Then the past says little of it. Within one deviation it surely didn't.
+    let extra = 0;
+    if (squared > narrow) {
+      const plain = ((1 - motion.jumpShare) * Math.exp((-0.5 * squared) / narrow)) / narrow;
+      const jumped = (motion.jumpShare * Math.exp((-0.5 * squared) / wide)) / wide;
+      extra = (plain + jumped > 0 ? jumped / (plain + jumped) : 1) * this.jumpVariance;
+    }
     const pp = values[at + PP] + extra;
     const pv = values[at + PV] + extra;
     const gain = pp / (pp + variance);
