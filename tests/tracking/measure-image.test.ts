@@ -44,6 +44,24 @@ describe('frames for the image model', () => {
   });
 });
 
+test('larger frames need fewer of them, in pairs all the same, from the first to the last', () => {
+  let before = 33;
+  for (const side of [128, 512, 724, 1024, 2048, 8000]) {
+    const picked = pickModelFrames(400, side * side);
+    expect(picked.length).toBeLessThan(before);
+    expect(picked.length * side * side).toBeLessThanOrEqual(Math.max(128e6, 12 * side * side));
+    expect(picked.length % 2).toBe(0);
+    for (let i = 0; i < picked.length; i += 2) expect(picked[i + 1]).toBe(picked[i] + 1);
+    if (picked.length > 2) expect(picked[picked.length - 1]).toBe(399);
+    before = picked.length + 1;
+  }
+});
+
+test('frames and their numbers must be as many', () => {
+  const frame: Frame = { width: 2, height: 2, counts: new Float32Array(4) };
+  expect(() => measureImage([frame, frame], {}, [0])).toThrow('2 frames need as many numbers. Received 1.');
+});
+
 describe('the image model of a simulated recording', () => {
   const model = measureImage(recording(), {});
 
