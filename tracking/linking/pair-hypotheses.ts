@@ -13,6 +13,8 @@ const KEPT = 16;
 const HOPELESS = 40;
 /** Slots of the explanations of one frame; those of the next one lie in the other bank. */
 const BANK = 2 * KEPT;
+/** Tracks that are both seen in every frame and stay this many spot sizes apart are not mistaken. */
+const CLEAR_SIZES = 2.5;
 /** Variance of where a tracer is in a spot that it shares with another one, spot sizes squared. */
 const MERGED_VARIANCE = 0.4;
 const NONE = -1;
@@ -72,15 +74,17 @@ export class PairHypotheses {
     if ((headA >= 0 && headA === headB) || (tailA >= 0 && tailA === tailB)) return;
     const { changed } = this.links;
     let spots = 0;
+    let clear = headA >= 0 && headB >= 0 && tailA >= 0 && tailB >= 0;
     let news = isSet(changed, headA) + isSet(changed, headB) + isSet(changed, tailA) + isSet(changed, tailB);
     for (let k = 0; k < frames; k++) {
       const a = this.spotA[k];
       const b = this.spotB[k];
       if (a >= 0 && a === b) return;
       spots += (a >= 0 ? 1 : 0) + (b >= 0 ? 1 : 0);
+      clear &&= a >= 0 && b >= 0 && this.areApart(a, b);
       news += isSet(changed, a) + isSet(changed, b);
     }
-    if (again && news === 0) return;
+    if (clear || (again && news === 0)) return;
     if (spots === 0 && (headA < 0 || headB < 0) && (tailA < 0 || tailB < 0)) return;
 
     this.now = 0;
@@ -240,6 +244,13 @@ export class PairHypotheses {
     const lateB = table.frame[s] - table.frame[forward.spot[b]] > soon;
     if (lateA !== lateB) return lateA;
     return forward.offSquared(a, s) <= forward.offSquared(b, s);
+  }
+
+  private areApart(a: number, b: number): boolean {
+    const dx = this.table.xPx[a] - this.table.xPx[b];
+    const dy = this.table.yPx[a] - this.table.yPx[b];
+    const apart = CLEAR_SIZES * this.spotSizePx;
+    return dx * dx + dy * dy > apart * apart;
   }
 
   private mayTake(i: number, s: number): boolean {
