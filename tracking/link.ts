@@ -1,7 +1,8 @@
 import { assembleTracks } from './linking/assemble-tracks';
 import { BRIGHTNESS_UNTOLD, measureBrightness } from './linking/brightness-statistics';
 import { joinPieces } from './linking/join-pieces';
-import { linkPass, type LinkLimits } from './linking/link-pass';
+import type { LinkLimits } from './linking/link-limits';
+import { linkPass } from './linking/link-pass';
 import { firstStatistics, measureStatistics } from './linking/motion-statistics';
 import { createSpotTable } from './linking/spot-table';
 import { statisticsSample } from './linking/statistics-sample';

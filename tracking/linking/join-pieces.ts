@@ -1,7 +1,7 @@
 import { createAssignmentSolver } from '../assign';
 import type { BrightnessStatistics } from './brightness-statistics';
 import { createEdges } from './edges';
-import type { LinkLimits } from './link-pass';
+import type { LinkLimits } from './link-limits';
 import type { MotionStatistics } from './motion-statistics';
 import { PairFilter } from './pair-filter';
 import { readTrack } from './read-track';

@@ -1,6 +1,7 @@
 import { createAssignmentSolver } from '../assign';
 import type { BrightnessStatistics } from './brightness-statistics';
 import { createEdges } from './edges';
+import type { LinkLimits } from './link-limits';
 import type { MotionStatistics } from './motion-statistics';
 import { SpotCells } from './spot-cells';
 import type { SpotTable } from './spot-table';
@@ -9,14 +10,6 @@ import { TracerFilter } from './tracer-filter';
 /** A tracer farther than this many mean spacings from a spot can't be told from others. */
 const REACH_SPACINGS = 2.5;
 const CELL_LEAST_PX = 4;
-
-export interface LinkLimits {
-  width: number;
-  height: number;
-  frames: number;
-  longestStepPx: number;
-  mayVanishFrames: number;
-}
 
 /**
  * Links spots from frame to frame: predicted tracers and found spots are assigned one to one at

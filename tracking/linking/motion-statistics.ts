@@ -1,5 +1,5 @@
 import type { Spots } from '../types';
-import type { LinkLimits } from './link-pass';
+import type { LinkLimits } from './link-limits';
 import { MEDIAN_OF_SQUARE, medianOf } from './medians';
 
 /** How tracers move and appear, measured from a first pass of linking. */

@@ -1,5 +1,5 @@
 import type { BrightnessStatistics } from './brightness-statistics';
-import type { LinkLimits } from './link-pass';
+import type { LinkLimits } from './link-limits';
 import type { MotionStatistics } from './motion-statistics';
 import { PairFilter } from './pair-filter';
 import { readTrack } from './read-track';

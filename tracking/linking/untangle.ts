@@ -1,6 +1,6 @@
 import type { BrightnessStatistics } from './brightness-statistics';
 import { closeApproaches } from './close-approaches';
-import type { LinkLimits } from './link-pass';
+import type { LinkLimits } from './link-limits';
 import type { MotionStatistics } from './motion-statistics';
 import { PairHypotheses } from './pair-hypotheses';
 import type { SpotTable } from './spot-table';
