@@ -1,9 +1,7 @@
 import type { TimedPoints } from './assess/frame-order';
-import { measuredTracks, type MeasuredTracks } from './assess/measured-tracks';
 import { matchPoints, nearestNeighbourPx } from './assess/point-match';
 import { lookAtTruth } from './assess/true-spots';
 import type { Scene, SceneCamera } from './simulate/scene';
-import type { Tracks } from './types';
 
 /** A found point farther than this from the truth is another thing. */
 export const FOUND_WITHIN_PX = 2;
@@ -35,9 +33,6 @@ export interface FoundPoints extends TimedPoints {
   sxPx: ArrayLike<number>;
   syPx: ArrayLike<number>;
 }
-
-/** Measured points of tracks; bridged ones are interpolated and count for nothing. */
-export const measuredPoints = (tracks: Tracks): MeasuredTracks => measuredTracks(tracks);
 
 /** Compares points with the scene that they were found in. */
 export function assessPoints(scene: Scene, camera: SceneCamera, found: FoundPoints): PointAssessment {
