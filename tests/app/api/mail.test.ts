@@ -37,9 +37,10 @@ beforeAll(async () => {
     times: { pollMs: 20, sweepMs: 50 },
   });
 });
-afterAll(() => worker.stop());
 afterAll(({}, suite) => database.dropIfGreen({}, suite));
 afterAll(closeDoorbell);
+// Hooks run last first: nobody works on a database that is being dropped.
+afterAll(() => worker.stop());
 
 const admin = () => lab.people.lab_administrator;
 
