@@ -29,8 +29,9 @@ export interface RecordingSize {
 /**
  * Tracks from spots. Each frame is one assignment problem, solved exactly: which predicted tracer
  * owns which spot, priced against tracers being missed and spots being new or false. Links are
- * made twice: with wide assumptions to learn how the tracers of this recording move, then with
- * what was learned. The same spots give the same tracks, in order of first frame, then y, then x.
+ * made twice: with wide assumptions to learn how the tracers of this recording move and how long
+ * their brightness lasts, then with what was learned. After that pieces of tracks are joined and
+ * close approaches of two tracks decided anew from both sides. The same spots give the same tracks, in order of first frame, then y, then x.
  *
  * @param spots of the whole recording, by frame, then y, then x.
  * @throws RangeError when spots are out of order or outside the recording's frames.
