@@ -1,5 +1,6 @@
 import { kernelsOfThisProcess } from '@/jobs/compute/kernels';
 import { keepsFalseRate, studyFalseSpots } from '@/tracking/studies/false-spots';
+import { studyLinkingDifficulty } from '@/tracking/studies/linking-difficulty';
 import { lineDensityTrials, summariseLineDensity } from '@/tracking/studies/line-density';
 import {
   goalsReached,
@@ -31,6 +32,8 @@ const RIGHT_LEAST = 90;
 const UNDECIDED_LEAST = 80;
 const WRONG_MOST = 5;
 const CAMPAIGN_SEEDS = Array.from({ length: 200 }, (_, i) => i + 1);
+/** Scatter of positions from easy to hopeless at 0.002 tracers per px^2, px. */
+const SCATTERS_PX = [0.1, 0.5, 1, 1.5, 2, 3];
 /** Line densities from a slow counterflow to a dense tangle, m^-2. */
 const LINE_DENSITIES = [1e7, 3e7, 1e8];
 
@@ -70,6 +73,12 @@ const STUDIES: Record<string, Study> = {
       for (const row of studyFalseSpots({ spotsLeast: FALSE_SPOTS_LEAST, seed: 1, effort })) {
         yield { effort, ...row, kept: keepsFalseRate(row) };
       }
+    }
+  },
+  /** Wrong links as steps grow towards the spacing of tracers. */
+  *'linking-difficulty'() {
+    for (const seed of SEEDS) {
+      for (const row of studyLinkingDifficulty({ seed, scattersPx: SCATTERS_PX })) yield { seed, ...row };
     }
   },
   /** Bias, scatter and coverage of each estimator of line density. */
