@@ -105,7 +105,8 @@ test('a recording without tracks has every table, empty, and every estimate, unk
   const measured = measureFlow(empty, IMAGE, { pixelSize_m: 1e-5, frameInterval_s: 0.005 }, RECIPE);
   expect(measured.pdfs).toEqual([]);
   expect(measured.candidates).toEqual([]);
-  expect(measured.estimates.length).toBe(10);
+  // Ten methods, density and spacing of each.
+  expect(measured.estimates.length).toBe(20);
   for (const estimate of measured.estimates) {
     expect(estimate.value).toBeNull();
     expect(estimate.note).toMatch(/\.$/);
