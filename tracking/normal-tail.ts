@@ -1,3 +1,6 @@
+/** Half the width of the central 95 % of a standard normal distribution. */
+export const Z95 = 1.959963984540054;
+
 const SQRT_2PI = Math.sqrt(2 * Math.PI);
 
 /** erfc for x >= 0: series near 0, continued fraction beyond (Abramowitz & Stegun 7.1.5, 7.1.14). */

@@ -1,8 +1,8 @@
 'use client';
 
 import { keepPreviousData, useQuery } from '@tanstack/react-query';
-import { usePathname, useRouter, useSearchParams } from 'next/navigation';
 import { api } from '@/components/data/api-client';
+import { useAddress } from '@/components/lists/use-address';
 import {
   filteredBy,
   listHref,
@@ -27,9 +27,7 @@ const SHAPE: ListShape = {
 
 /** The comparison that the address asks for; order, choice and axis stand in it too, so it can be sent to others. */
 export function useComparison() {
-  const path = usePathname();
-  const present = new URLSearchParams(useSearchParams());
-  const router = useRouter();
+  const { path, shown: present, change } = useAddress();
   const state = readListState(present, SHAPE);
   const asked = new URLSearchParams();
   for (const name of ASKED) if (state.filters[name]) asked.set(name, state.filters[name]);
@@ -51,6 +49,6 @@ export function useComparison() {
       current: sortDirection(state, field),
     }),
     set: (name: (typeof ASKED)[number] | 'against', value: string) =>
-      router.replace(listHref(path, filteredBy(state, name, value), SHAPE, present), { scroll: false }),
+      change((asked) => listHref(path, filteredBy(readListState(asked, SHAPE), name, value), SHAPE, asked)),
   };
 }

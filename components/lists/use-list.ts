@@ -1,7 +1,6 @@
 'use client';
 
 import { keepPreviousData, useQuery } from '@tanstack/react-query';
-import { usePathname, useRouter, useSearchParams } from 'next/navigation';
 import { api } from '@/components/data/api-client';
 import {
   apiQuery,
@@ -15,6 +14,7 @@ import {
   type ListShape,
 } from '@/lib/lists/list-state';
 import type { ListView } from '@/lib/views/common';
+import { useAddress } from './use-address';
 
 /** Rows of a page of any list. */
 const PAGE_ROWS = 25;
@@ -25,10 +25,7 @@ const PAGE_ROWS = 25;
  * @param refreshMs asks again this often; for lists of work that goes on.
  */
 export function useList<T>(source: string, shape: ListShape, refreshMs?: number) {
-  const path = usePathname();
-  const params = useSearchParams();
-  const router = useRouter();
-  const present = new URLSearchParams(params);
+  const { path, shown: present, change } = useAddress();
   const state = readListState(present, shape);
   const address = `${source}${source.includes('?') ? '&' : '?'}${apiQuery(state, PAGE_ROWS)}`;
   const query = useQuery({
@@ -47,7 +44,7 @@ export function useList<T>(source: string, shape: ListShape, refreshMs?: number)
       current: sortDirection(state, field),
     }),
     filter: (name: string, value: string) =>
-      router.replace(listHref(path, filteredBy(state, name, value), shape, present), { scroll: false }),
+      change((asked) => listHref(path, filteredBy(readListState(asked, shape), name, value), shape, asked)),
     backHref: before && listHref(path, before, shape, present),
     nextHref: next ? listHref(path, nextPage(state, next), shape, present) : null,
   };

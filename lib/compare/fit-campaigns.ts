@@ -1,9 +1,8 @@
 import { gammaAt } from '@/tracking/flow/steady-tangle';
+import { Z95 } from '@/tracking/normal-tail';
 import { fitSteadyTangle } from '@/tracking/steady-tangle/fit-steady-tangle';
 import type { ComparedFit, ComparedRun } from '../views/compare-view';
 
-/** Standard errors of a two-sided 95 % interval. */
-const Z95 = 1.959963984540054;
 const RUNS_LEAST = 3;
 /** Runs that differ by more in temperature have different gammas. */
 const TEMPERATURE_SPAN_K = 0.05;

@@ -8,7 +8,6 @@ export const COMPARED_METHODS = [
   'beads-per-length',
   'line-velocity',
 ] as const;
-export type ComparedMethod = (typeof COMPARED_METHODS)[number];
 
 /** Campaigns in one comparison at most. */
 export const COMPARED_CAMPAIGNS_MOST = 20;

@@ -1,9 +1,8 @@
+import { Z95 } from '../normal-tail';
 import { spacingFromDensity } from './stereology';
 import type { Estimate, EstimateInput, EstimateMethod } from './estimate';
 
 export const LEVEL = 0.95;
-/** Standard errors of a two-sided 95 % interval. */
-const Z95 = 1.959963984540054;
 
 /** One way to the line density, before it is written down as density and as spacing. */
 export interface DensityResult {

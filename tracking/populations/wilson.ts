@@ -1,5 +1,4 @@
-/** Normal quantile of a two-sided 95 % interval. */
-const Z95 = 1.959963984540054;
+import { Z95 } from '../normal-tail';
 
 /** Wilson's interval of a proportion (Wilson 1927), level 0.95. NaN without trials. */
 export function wilsonInterval(successes: number, trials: number): { low: number; high: number } {

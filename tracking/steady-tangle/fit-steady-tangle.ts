@@ -1,4 +1,5 @@
 import { chiSquareTail } from '../estimates/random-effects';
+import { Z95 } from '../normal-tail';
 import { studentHalfWidth } from '../student-t';
 import { fitLineWithTwoErrors, type LineFit } from './line-with-two-errors';
 
@@ -30,8 +31,6 @@ export interface SteadyTangleFit {
 }
 
 const LEVEL = 0.95;
-/** Standard errors of a two-sided 95 % interval where the errors are known. */
-const Z95 = 1.959963984540054;
 /** Errors that would leave so much scatter less often than this are too small. */
 const DOUBT = 0.05;
 

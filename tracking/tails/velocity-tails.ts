@@ -1,3 +1,4 @@
+import { Z95 } from '../normal-tail';
 import { componentNoise, componentOf, lagSamples, type LagSamples } from '../velocity-pdfs/component-samples';
 import type { PdfPopulation, VelocityComponent } from '../velocity-pdf-shape';
 import { POPULATIONS, type Conditions, type Recipe, type Tracks } from '../types';
@@ -120,8 +121,8 @@ function describe(sizes: TailSamples, floorMS: number): Described {
     tailSamples: samples,
     tailTracks: new Set(track.subarray(0, samples)).size,
     exponent: alpha,
-    exponentLow: alpha - 1.96 * error.standardError,
-    exponentHigh: alpha + 1.96 * error.standardError,
+    exponentLow: alpha - Z95 * error.standardError,
+    exponentHigh: alpha + Z95 * error.standardError,
     fromMS,
     gaussian,
     logNormal,
