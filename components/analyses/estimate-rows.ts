@@ -33,14 +33,14 @@ const COUNTED: readonly [input: string, words: string][] = [
 /** Standard errors of a two-sided 95 % interval. */
 const Z95 = 1.96;
 
-/** Estimates of one quantity as rows, the combined one last. */
+/** Estimates of one quantity as rows: those with a value, those without one, the combined one last. */
 export function estimateRows(
   estimates: readonly Estimate[],
   quantity: string,
   unit: DisplayUnit,
 ): EstimateRow[] {
   const mine = estimates.filter((estimate) => estimate.quantity === quantity);
-  const ordered = [...mine].sort((a, b) => Number(a.method === 'combined') - Number(b.method === 'combined'));
+  const ordered = [...mine].sort((a, b) => placeOf(a) - placeOf(b));
   const used = ordered.find(({ method }) => method === 'combined')?.inputs ?? {};
   return ordered.map((estimate) => ({
     key: estimate.method,
@@ -53,6 +53,8 @@ export function estimateRows(
     combined: estimate.method === 'combined',
   }));
 }
+
+const placeOf = ({ method, value }: Estimate) => (method === 'combined' ? 2 : value === null ? 1 : 0);
 
 /**
  * Thick and thin ends. The stored interval holds both errors; the part of chance alone stands in

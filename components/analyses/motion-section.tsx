@@ -87,8 +87,8 @@ function Spread({ list, component }: { list: MotionView['displacements']; compon
         fileName={`spreading-${component}`}
       />
       <p className="text-note text-ink-2">
-        Localization noise is subtracted; exponents allow for the open shutter. 1 is diffusion, 2 straight
-        motion.
+        {findings(curves)}Localization noise is subtracted; exponents allow for the open shutter. 1 is
+        diffusion, 2 straight motion.
       </p>
     </>
   );
@@ -109,10 +109,17 @@ function Memory({ list, component }: { list: MotionView['autocorrelations']; com
         fileName={`memory-${component}`}
       />
       <p className="text-note text-ink-2">
-        About the mean velocity of the population, localization noise taken out of the first two points.
+        {findings(curves)}About the mean velocity of the population, localization noise taken out of the first
+        two points.
       </p>
     </>
   );
+}
+
+/** What the fits found, population by population; empty where none could be made. */
+function findings(curves: readonly { population: string; finding?: string }[]): string {
+  const told = curves.flatMap(({ population, finding }) => (finding ? [`${population}: ${finding}`] : []));
+  return told.length > 0 ? `${told.join('; ')}. ` : '';
 }
 
 const sentence = (

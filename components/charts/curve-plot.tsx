@@ -11,7 +11,7 @@ import { DRAWING_ORDER, POPULATION_LOOK, type PlottedPopulation } from './popula
 export interface Curve {
   population: PlottedPopulation;
   points: readonly (PlotPoint & { low: number | null; high: number | null })[];
-  /** A quiet second line under the population's name. */
+  /** What a fit of it found, told in the plot's sentence and in the line under it. */
   finding?: string;
 }
 
@@ -80,7 +80,6 @@ export function CurvePlot({ curves, x, y, level, label, fileName }: CurvePlotPro
               dxPx={dxPx}
               dyPx={dyPx}
               words={curve.population}
-              note={curve.finding}
             />
           ) : null;
         })}

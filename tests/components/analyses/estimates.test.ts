@@ -25,15 +25,15 @@ const combined: DensityResult = {
 };
 const estimates = [
   combined,
+  notUsable('neighbour-distance', 'Too few lines.', {}, 4e7),
   result('beads-per-length', 1.2e8),
   result('heat-flux-prior', 2e8),
-  notUsable('neighbour-distance', 'Too few lines.', {}, 4e7),
 ].flatMap(asEstimates);
 
 describe('estimates side by side', () => {
   const rows = estimateRows(estimates, 'line_density', DENSITY_UNIT);
 
-  it('end with the combined value, and draw hollow what is not part of it', () => {
+  it('begin with values, end with the combined one, and draw hollow what is not part of it', () => {
     expect(rows.map(({ key, hollow }) => [key, hollow])).toEqual([
       ['beads-per-length', false],
       ['heat-flux-prior', true],
