@@ -6,7 +6,7 @@ import { Segment } from '@/components/ui/choice';
 import { EmptyState } from '@/components/ui/page-states';
 import { Section } from '@/components/ui/sheet';
 import type { MeasuresView } from '@/lib/views/analysis-view';
-import { agreementSentence, DENSITY_UNIT, estimateRows, SPACING_UNIT } from './estimate-rows';
+import { agreementSentence, DENSITY_UNIT, estimateRows, SPACING_UNIT } from '@/lib/charts/estimate-rows';
 
 const QUANTITIES = [
   { value: 'line_density', label: 'density' },

@@ -13,7 +13,7 @@ import {
   motionComponents,
   spreadCurve,
   toldApart,
-} from './motion-curves';
+} from '@/lib/charts/motion-curves';
 import { TailTable } from './tail-table';
 
 const ASPECTS = [

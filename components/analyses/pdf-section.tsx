@@ -14,7 +14,7 @@ import {
   pdfSeries,
   type Pdf,
   type PdfComponentName,
-} from './pdf-choices';
+} from '@/lib/charts/pdf-choices';
 
 const SCALES = [
   { value: 'linear', label: 'linear' },

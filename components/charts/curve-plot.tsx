@@ -1,19 +1,12 @@
 'use client';
 
-import type { AxisRange } from './axis-ticks';
+import type { AxisRange } from '@/lib/charts/axis-ticks';
+import { DRAWING_ORDER, type Curve } from '@/lib/charts/curve';
 import { ChartFrame } from './chart-frame';
 import { Plot } from './plot';
-import { BandMark, DotMark, LabelMark, LineMark, type PlotPoint } from './plot-marks';
+import { BandMark, DotMark, LabelMark, LineMark } from './plot-marks';
 import type { AxisTitle } from './plot-text';
-import { DRAWING_ORDER, POPULATION_LOOK, type PlottedPopulation } from './population-look';
-
-/** One curve in printed units with its 95 % band. */
-export interface Curve {
-  population: PlottedPopulation;
-  points: readonly (PlotPoint & { low: number | null; high: number | null })[];
-  /** What a fit of it found, told in the plot's sentence and in the line under it. */
-  finding?: string;
-}
+import { POPULATION_LOOK } from './population-look';
 
 interface CurvePlotProps {
   curves: readonly Curve[];

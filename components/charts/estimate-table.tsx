@@ -1,13 +1,8 @@
 import type { ReactNode } from 'react';
-import {
-  axisAround,
-  IntervalThread,
-  logGrid,
-  shareOnLogAxis,
-  type LogAxis,
-} from '@/components/ui/interval-thread';
+import { IntervalThread } from '@/components/ui/interval-thread';
 import { Quantity, Unit } from '@/components/ui/quantity';
 import { Cell, HeadCell, NarrowMore, Row, Table } from '@/components/ui/table';
+import { axisAround, logGrid, shareOnLogAxis, type LogAxis } from '@/lib/charts/log-axis';
 import { formatQuantity, quantityText } from '@/lib/format/quantity';
 import type { DisplayUnit } from '@/lib/format/unit';
 

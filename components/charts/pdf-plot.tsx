@@ -1,12 +1,13 @@
 'use client';
 
 import { EmptyState } from '@/components/ui/page-states';
+import { DRAWING_ORDER } from '@/lib/charts/curve';
 import { ChartFrame } from './chart-frame';
-import { binMiddleMmS, densitySMm, labelBin, pdfBands, pdfPoints, pdfRanges } from './pdf-series';
-import type { PdfComponent, PdfPopulation, PdfSeries } from './pdf-series';
+import { binMiddleMmS, densitySMm, labelBin, pdfBands, pdfPoints, pdfRanges } from '@/lib/charts/pdf-series';
+import type { PdfComponent, PdfPopulation, PdfSeries } from '@/lib/charts/pdf-series';
 import { Plot } from './plot';
 import { BandMark, DotMark, FloorMark, LabelMark, LineMark, NoiseMark } from './plot-marks';
-import { DRAWING_ORDER, POPULATION_LOOK } from './population-look';
+import { POPULATION_LOOK } from './population-look';
 
 interface PdfPlotProps {
   series: readonly PdfSeries[];

@@ -1,13 +1,8 @@
 'use client';
 
 import { useId, type ReactNode } from 'react';
+import type { PlotPoint } from '@/lib/charts/curve';
 import { usePlot, type PlotScales } from './plot';
-
-/** A point in the printed units; `y` null breaks the line there. */
-export interface PlotPoint {
-  x: number;
-  y: number | null;
-}
 
 /** Path of a line through points; unknown points break it, and so does what the scale can't place. */
 export function linePath(points: readonly PlotPoint[], plot: Pick<PlotScales, 'x' | 'y'>): string {

@@ -10,7 +10,7 @@ import {
   XAxis,
   YAxis,
 } from 'recharts';
-import { axisTicks, showsPowers, type AxisRange } from './axis-ticks';
+import { axisTicks, showsPowers, type AxisRange } from '@/lib/charts/axis-ticks';
 import { AxisTitleText, TickText, type AxisTitle } from './plot-text';
 
 export interface PlotAxis extends AxisRange {

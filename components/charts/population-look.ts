@@ -1,4 +1,4 @@
-export type PlottedPopulation = 'trapped' | 'free' | 'undecided' | 'all';
+import type { PlottedPopulation } from '@/lib/charts/curve';
 
 /** The strokes of the populations, as everywhere: beaded, plain, dashed. */
 export const POPULATION_LOOK: Record<
@@ -10,6 +10,3 @@ export const POPULATION_LOOK: Record<
   undecided: { stroke: 'var(--undecided)', widthPx: 1.4, dash: '5 4', beads: false },
   all: { stroke: 'var(--ink)', widthPx: 1.2, beads: false },
 };
-
-/** Drawn in this order: what matters most lies on top. */
-export const DRAWING_ORDER: readonly PlottedPopulation[] = ['undecided', 'all', 'free', 'trapped'];

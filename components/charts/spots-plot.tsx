@@ -1,7 +1,7 @@
 'use client';
 
 import { EmptyState } from '@/components/ui/page-states';
-import { paddedRange } from './axis-ticks';
+import { paddedRange } from '@/lib/charts/axis-ticks';
 import { ChartFrame } from './chart-frame';
 import { envelope } from './envelope';
 import { Plot } from './plot';

@@ -3,7 +3,7 @@
 import { Checkbox, Segment, SelectField } from '@/components/ui/choice';
 import { Field } from '@/components/ui/field';
 import { Fold } from '@/components/ui/fold';
-import { methodName } from '@/components/analyses/estimate-rows';
+import { methodName } from '@/lib/charts/estimate-rows';
 import { countOf } from '@/lib/format/count';
 import { COMPARED_METHODS } from '@/lib/schemas/compare';
 import type { CompareView } from '@/lib/views/compare-view';

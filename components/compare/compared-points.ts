@@ -1,4 +1,4 @@
-import { paddedRange, type AxisRange } from '@/components/charts/axis-ticks';
+import { paddedRange, type AxisRange } from '@/lib/charts/axis-ticks';
 import type { ErrorPoint } from '@/components/charts/series-marks';
 import { rootDensity } from '@/lib/compare/fit-campaigns';
 import { DISPLAY_UNITS } from '@/lib/format/unit';

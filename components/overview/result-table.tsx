@@ -1,12 +1,12 @@
 import Link from 'next/link';
+import { IntervalThread } from '@/components/ui/interval-thread';
 import {
   axisAround,
-  IntervalThread,
   logGrid,
   shareOnLogAxis,
   type LogAxis,
   type ThreadInterval,
-} from '@/components/ui/interval-thread';
+} from '@/lib/charts/log-axis';
 import { EmptyState } from '@/components/ui/page-states';
 import { Quantity, Unit } from '@/components/ui/quantity';
 import { Cell, HeadCell, Row, Table } from '@/components/ui/table';

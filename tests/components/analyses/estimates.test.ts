@@ -1,10 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import {
-  agreementSentence,
-  DENSITY_UNIT,
-  estimateRows,
-  SPACING_UNIT,
-} from '@/components/analyses/estimate-rows';
+import { agreementSentence, DENSITY_UNIT, estimateRows, SPACING_UNIT } from '@/lib/charts/estimate-rows';
 import { expectWithin } from '@/tests/helpers/expect-within';
 import { asEstimates, notUsable, type DensityResult } from '@/tracking/estimates/interval';
 

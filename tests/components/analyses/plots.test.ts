@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { chanceText, separationFits, separationPoints } from '@/components/analyses/candidate-words';
-import { componentsOf, lagsOf, pdfsAt, pdfSeries, type Pdf } from '@/components/analyses/pdf-choices';
+import { componentsOf, lagsOf, pdfsAt, pdfSeries, type Pdf } from '@/lib/charts/pdf-choices';
 import { driftText, shareText } from '@/components/recordings/quality-notes';
 import type { CandidateView } from '@/lib/views/analysis-view';
 import { expectWithin } from '@/tests/helpers/expect-within';

@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { axisAround, logGrid, shareOnLogAxis } from '@/components/ui/interval-thread';
+import { axisAround, logGrid, shareOnLogAxis } from '@/lib/charts/log-axis';
 import { partWidths } from '@/components/ui/population-thread';
 import { tiePath } from '@/components/ui/tie-path';
 import { analysisStages, filledBeads, placeBeads } from '@/components/ui/thread-beads';

@@ -1,7 +1,7 @@
-import type { PdfSeries } from '@/components/charts/pdf-series';
-import { quantityText } from '@/lib/format/quantity';
-import { DISPLAY_UNITS } from '@/lib/format/unit';
-import type { MeasuresView } from '@/lib/views/analysis-view';
+import type { PdfSeries } from './pdf-series';
+import { quantityText } from '../format/quantity';
+import { DISPLAY_UNITS } from '../format/unit';
+import type { MeasuresView } from '../views/analysis-view';
 
 export type Pdf = MeasuresView['pdfs'][number];
 export type PdfComponentName = Pdf['component'];

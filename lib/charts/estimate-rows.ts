@@ -1,10 +1,26 @@
-import type { EstimateRow } from '@/components/charts/estimate-table';
-import { formatCount } from '@/lib/format/count';
-import { quantityText } from '@/lib/format/quantity';
-import { DISPLAY_UNITS, type DisplayUnit } from '@/lib/format/unit';
-import type { MeasuresView } from '@/lib/views/analysis-view';
+import { formatCount } from '../format/count';
+import { quantityText } from '../format/quantity';
+import { DISPLAY_UNITS, type DisplayUnit } from '../format/unit';
+import type { MeasuresView } from '../views/analysis-view';
 
 type Estimate = MeasuresView['estimates'][number];
+
+/** One method's value of a quantity, SI, with words; null where it can't be had, and `note` says why. */
+export interface EstimateRow {
+  key: string;
+  method: string;
+  value: number | null;
+  low: number | null;
+  high: number | null;
+  /** Ends with the systematic part. */
+  wideLow?: number | null;
+  wideHigh?: number | null;
+  /** A prior, or left out of the combined value. */
+  hollow: boolean;
+  from?: string;
+  note: string;
+  combined: boolean;
+}
 
 const METHOD_NAMES: Record<string, string> = {
   crossings: 'Lines through the sheet',

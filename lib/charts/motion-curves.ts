@@ -1,7 +1,7 @@
-import { decadeRange, paddedRange, type AxisRange } from '@/components/charts/axis-ticks';
-import type { Curve } from '@/components/charts/curve-plot';
-import { quantityText } from '@/lib/format/quantity';
-import type { MotionView } from '@/lib/views/motion-view';
+import { decadeRange, paddedRange, type AxisRange } from './axis-ticks';
+import type { Curve } from './curve';
+import { quantityText } from '../format/quantity';
+import type { MotionView } from '../views/motion-view';
 
 type Displacement = MotionView['displacements'][number];
 type Autocorrelation = MotionView['autocorrelations'][number];
