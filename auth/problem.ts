@@ -101,9 +101,18 @@ export function queryError(error: ZodError): LabError {
   return new LabError('QUERY', errors[0].message, { errors });
 }
 
-function fieldErrors(error: ZodError, kind = 'field'): FieldError[] {
+type Issue = ZodError['issues'][number];
+
+function fieldErrors(
+  error: { issues: readonly Issue[] },
+  kind = 'field',
+  above: string[] = [],
+): FieldError[] {
   return error.issues.flatMap((issue): FieldError[] => {
-    const path = issue.path.map(String);
+    const path = [...above, ...issue.path.map(String)];
+    if (issue.code === 'invalid_union' && issue.message === 'Invalid input' && issue.errors.length > 0) {
+      return fieldErrors({ issues: nearestForm(issue.errors) }, kind, path);
+    }
     if (issue.code === 'unrecognized_keys') {
       return issue.keys.map((key) => ({
         path: [...path, key].join('.'),
@@ -112,6 +121,12 @@ function fieldErrors(error: ZodError, kind = 'field'): FieldError[] {
     }
     return [{ path: path.join('.'), message: issue.message }];
   });
+}
+
+/** Of several forms that a value may have, what is wrong with the one that it comes nearest to. */
+function nearestForm(forms: readonly Issue[][]): readonly Issue[] {
+  const depth = (issues: readonly Issue[]) => Math.min(...issues.map(({ path }) => path.length));
+  return forms.reduce((best, form) => (depth(form) > depth(best) ? form : best));
 }
 
 function codeFor({ path, message }: FieldError): ErrorCode {

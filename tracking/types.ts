@@ -59,6 +59,9 @@ export const SPOT_SATURATED = 4;
 export const SPOT_ELONGATED = 8;
 /** The tracer was missed in this frame; the position is interpolated, not measured. */
 export const POINT_BRIDGED = 16;
+/** A person added the point, or moved it. */
+export const POINT_ADDED = 32;
+export const POINT_MOVED = 64;
 
 /** Spots of a run of frames, ordered by frame, then y, then x. */
 export interface Spots {
