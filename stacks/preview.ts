@@ -1,11 +1,14 @@
 import { type Frame } from '@/tracking/types';
 import { greyImage } from './grey-image';
+import type { BrightnessScale } from './stretch';
 
 export interface PreviewOptions {
   /** Count shown as black. */
   low: number;
   /** Count shown as white; at least as large as `low`. */
   high: number;
+  /** How brightness in between is shown; linear when left out. */
+  scale?: BrightnessScale | undefined;
   /** Width of the picture, px; wider than the frame means the frame's own. */
   width?: number | undefined;
   format: 'webp' | 'png';
@@ -21,7 +24,7 @@ const PNG = { compressionLevel: 3 } as const;
  */
 export async function encodePreview(frame: Frame, options: PreviewOptions): Promise<Buffer> {
   const { width } = frame;
-  const image = greyImage(frame, options.low, options.high);
+  const image = greyImage(frame, options.low, options.high, options.scale);
   const shown = Math.max(1, Math.min(width, Math.round(options.width ?? width)));
   if (shown < width) image.resize({ width: shown });
   return options.format === 'webp' ? image.webp(WEBP).toBuffer() : image.png(PNG).toBuffer();

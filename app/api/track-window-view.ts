@@ -6,11 +6,14 @@ const short = (value: number): number => Math.round(value * 100) / 100;
 
 export function trackWindowView(window: TrackWindow, from: number, to: number): TrackWindowView {
   return {
+    revision: window.revision,
     from,
     to,
     tracks: Array.from(window.track),
     population: Array.from(window.population, (code) => (code === POPULATION_UNKNOWN ? null : code)),
     pTrapped: Array.from(window.pTrapped, (p) => (Number.isNaN(p) ? null : Math.round(p * 1e4) / 1e4)),
+    firstFrame: Array.from(window.firstFrame),
+    lastFrame: Array.from(window.lastFrame),
     start: Array.from(window.start),
     frame: Array.from(window.frame),
     x: Array.from(window.xPx, short),

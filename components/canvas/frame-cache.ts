@@ -25,6 +25,8 @@ export class FrameCache<T extends Closable> {
   private readonly kept = new Map<number, T>();
   private readonly flights = new Map<number, AbortController>();
   private readonly failures = new Map<number, Error>();
+  /** Kept, but overtaken: shown until the new one is here. */
+  private readonly overtaken = new Set<number>();
   private wanted: number[] = [];
   private shown = -1;
   private closed = false;
@@ -67,6 +69,26 @@ export class FrameCache<T extends Closable> {
     this.fill();
   }
 
+  /** What is kept, in no order. */
+  values(): T[] {
+    return [...this.kept.values()];
+  }
+
+  /** Has everything that is wanted loaded anew; what is kept is shown until then, and the rest is dropped. */
+  renew(): void {
+    for (const flight of this.flights.values()) flight.abort();
+    const wanted = new Set(this.wanted);
+    for (const [frame, picture] of this.kept) {
+      if (wanted.has(frame)) this.overtaken.add(frame);
+      else {
+        this.kept.delete(frame);
+        picture.close();
+      }
+    }
+    this.failures.clear();
+    this.fill();
+  }
+
   /** Frees everything; nothing is loaded afterwards. */
   close(): void {
     this.closed = true;
@@ -79,7 +101,8 @@ export class FrameCache<T extends Closable> {
     if (this.closed) return;
     for (const frame of this.wanted) {
       if (this.flights.size >= this.parallel) return;
-      if (this.kept.has(frame) || this.flights.has(frame) || this.failures.has(frame)) continue;
+      if (this.kept.has(frame) && !this.overtaken.has(frame)) continue;
+      if (this.flights.has(frame) || this.failures.has(frame)) continue;
       void this.fetchFrame(frame);
     }
   }
@@ -89,12 +112,14 @@ export class FrameCache<T extends Closable> {
     this.flights.set(frame, flight);
     try {
       const picture = await this.options.load(frame, flight.signal);
-      if (this.closed) {
+      // What was asked for before it was overtaken must not pass for the new one.
+      if (this.closed || (flight.signal.aborted && this.overtaken.has(frame))) {
         picture.close();
         return;
       }
       this.kept.get(frame)?.close();
       this.kept.set(frame, picture);
+      this.overtaken.delete(frame);
       this.evict();
       this.options.onChange(frame);
     } catch (error) {
@@ -112,6 +137,7 @@ export class FrameCache<T extends Closable> {
       if (this.kept.size <= this.capacity) return;
       if (frame === this.shown) continue;
       this.kept.delete(frame);
+      this.overtaken.delete(frame);
       picture.close();
     }
   }

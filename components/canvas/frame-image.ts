@@ -17,13 +17,16 @@ export interface FrameRequest {
   recordingId: string;
   low: number;
   high: number;
+  /** How brightness between black and white is shown; linear when left out. */
+  scale?: 'linear' | 'log';
   width: number | null;
 }
 
 /** Address of a frame's picture; counts at and below `low` are black, at and above `high` white. */
-export function frameUrl(frame: number, { recordingId, low, high, width }: FrameRequest): string {
+export function frameUrl(frame: number, { recordingId, low, high, scale, width }: FrameRequest): string {
   const query = new URLSearchParams({ low: String(low), high: String(high) });
   if (width !== null) query.set('width', String(width));
+  if (scale === 'log') query.set('scale', scale);
   return `/api/v1/recordings/${recordingId}/frames/${frame}?${query}`;
 }
 

@@ -6,7 +6,7 @@ import type { ViewerState } from './viewer-store';
 /** A dragged contrast bead asks for new pictures only where it rests this long. */
 const REST_MS = 90;
 
-const keyOf = ({ low, high, width }: FrameRequest) => `${low} ${high} ${width}`;
+const keyOf = ({ low, high, scale, width }: FrameRequest) => `${low} ${high} ${scale} ${width}`;
 
 /**
  * Pictures of a recording at the contrast and zoom of the moment. When those change, the pictures
@@ -33,7 +33,8 @@ export class FramePictures {
     this.frame = state.frame;
     this.direction = state.direction;
     const width = frameRequestWidth(this.image, state.view, pixelRatio);
-    const request = { recordingId: this.recordingId, low: state.low, high: state.high, width };
+    const { low, high, brightness: scale } = state;
+    const request = { recordingId: this.recordingId, low, high, scale, width };
     if (keyOf(request) === this.key) {
       this.current?.want(state.frame, state.direction);
       return;

@@ -6,7 +6,7 @@ import { Layer, Shape, Stage } from 'react-konva';
 import { Button } from '@/components/ui/button';
 import { FramePictures } from './frame-pictures';
 import { readWellColours, type WellColours } from './stroke-style';
-import { useWellGestures } from './use-well-gestures';
+import { useWellGestures, type WellPointer } from './use-well-gestures';
 import { useViewer } from './use-viewer';
 import { fitView, panBy, zoomAt, type Point, type Size, type ViewBox } from './view-box';
 import { commandOf } from './viewer-keys';
@@ -21,7 +21,27 @@ export interface OverlayScene {
   colours: WellColours;
 }
 
-interface FrameWellProps {
+/** What the uppermost layer draws with: the picture as well, for looking at it closely. */
+export interface NearScene extends OverlayScene {
+  picture: ImageBitmap | null;
+}
+
+/** A layer of its own for what follows the pointer, so that tracks need not be drawn again for it. */
+export interface NearLayer {
+  draw: (scene: NearScene) => void;
+  /** Handed the function that has the layer drawn again; null when the well is gone. */
+  attach: (redraw: (() => void) | null) => void;
+}
+
+/** What a page adds to a well that is worked in. */
+export interface WellWork {
+  /** Keys of the page around the well, asked before the well's own; true when the press was taken. */
+  onKey?: (event: KeyboardEvent) => boolean;
+  pointer?: WellPointer;
+  near?: NearLayer;
+}
+
+interface FrameWellProps extends WellWork {
   store: ViewerStore;
   recordingId: string;
   image: Size;
@@ -44,10 +64,13 @@ export function FrameWell(props: FrameWellProps) {
   const holder = useRef<HTMLDivElement>(null);
   const imageLayer = useRef<Konva.Layer>(null);
   const overlayLayer = useRef<Konva.Layer>(null);
+  const nearLayer = useRef<Konva.Layer>(null);
   const pictures = useRef<FramePictures | null>(null);
   const colours = useRef<WellColours | null>(null);
   const drawOverlay = useRef(props.drawOverlay);
   const onPick = useRef(props.onPick);
+  const pointer = useRef<WellPointer>(props.pointer ?? {});
+  const { near } = props;
   const wellSize = useRef<Size | null>(null);
   const [size, setSize] = useState<Size | null>(null);
   const [failure, setFailure] = useState<string | null>(null);
@@ -55,6 +78,7 @@ export function FrameWell(props: FrameWellProps) {
   useEffect(() => {
     drawOverlay.current = props.drawOverlay;
     onPick.current = props.onPick;
+    pointer.current = props.pointer ?? {};
   });
 
   useEffect(() => {
@@ -88,6 +112,7 @@ export function FrameWell(props: FrameWellProps) {
       if (source.picture(state.frame) || problem) store.set({ shown: state.frame });
       imageLayer.current?.batchDraw();
       overlayLayer.current?.batchDraw();
+      nearLayer.current?.batchDraw();
     };
     const stop = store.subscribe(follow);
     follow();
@@ -102,10 +127,25 @@ export function FrameWell(props: FrameWellProps) {
     overlayLayer.current?.batchDraw();
   }, [overlayVersion]);
 
-  useWellGestures(holder, store, image, wellSize, onPick);
+  useEffect(() => {
+    const onOnline = () => pictures.current?.retry(store.get().frame);
+    window.addEventListener('online', onOnline);
+    return () => window.removeEventListener('online', onOnline);
+  }, [store]);
+
+  useEffect(() => {
+    near?.attach(() => nearLayer.current?.batchDraw());
+    return () => near?.attach(null);
+  }, [near]);
+
+  useWellGestures(holder, store, image, wellSize, onPick, pointer);
 
   const onKeyDown = (event: KeyboardEvent) => {
     if (event.target !== holder.current) return;
+    if (props.onKey?.(event)) {
+      event.preventDefault();
+      return;
+    }
     const command = commandOf(event);
     const well = wellSize.current;
     const { view } = store.get();
@@ -137,16 +177,20 @@ export function FrameWell(props: FrameWellProps) {
     const [left, top] = [view.offsetX - corner, view.offsetY - corner];
     ctx.drawImage(picture, left, top, image.width * view.scale, image.height * view.scale);
   };
-  const paintOverlay = (context: Konva.Context) => {
+  const sceneOn = (context: Konva.Context): OverlayScene | null => {
     const state = store.get();
-    if (!state.view || !wellSize.current || !colours.current) return;
-    drawOverlay.current({
-      ctx: context._context,
-      state,
-      view: state.view,
-      well: wellSize.current,
-      colours: colours.current,
-    });
+    if (!state.view || !wellSize.current || !colours.current) return null;
+    const ctx = context._context;
+    return { ctx, state, view: state.view, well: wellSize.current, colours: colours.current };
+  };
+  const paintOverlay = (context: Konva.Context) => {
+    const scene = sceneOn(context);
+    if (scene) drawOverlay.current(scene);
+  };
+  const paintNear = (context: Konva.Context) => {
+    const scene = sceneOn(context);
+    if (!scene || !near) return;
+    near.draw({ ...scene, picture: pictures.current?.picture(scene.state.shown) ?? null });
   };
 
   return (
@@ -168,6 +212,11 @@ export function FrameWell(props: FrameWellProps) {
             <Layer ref={overlayLayer} listening={false}>
               <Shape sceneFunc={paintOverlay} listening={false} perfectDrawEnabled={false} />
             </Layer>
+            {near ? (
+              <Layer ref={nearLayer} listening={false}>
+                <Shape sceneFunc={paintNear} listening={false} perfectDrawEnabled={false} />
+              </Layer>
+            ) : null}
           </Stage>
         ) : null}
       </WellSurface>

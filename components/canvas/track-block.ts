@@ -12,6 +12,8 @@ export const UNKNOWN = 3;
  * by frame; positions are px of the image.
  */
 export interface TrackBlock {
+  /** Revision of the tracks that it was read at. */
+  revision: number;
   from: number;
   to: number;
   count: number;
@@ -25,11 +27,19 @@ export interface TrackBlock {
   x: Float32Array;
   y: Float32Array;
   bridged: Uint8Array;
+  /** Bits of tracking/types, one byte per point. */
+  flags: Uint8Array;
+  /** First and last frame of each whole track, as far as it is known. */
+  firstFrame: Uint32Array;
+  lastFrame: Uint32Array;
 }
 
 /** An answer of the server as flat arrays. */
 export function toTrackBlock(window: TrackWindowView): TrackBlock {
+  const frame = Uint32Array.from(window.frame);
+  const ends = (k: (i: number) => number) => Uint32Array.from(window.tracks, (_, i) => frame[k(i)] ?? 0);
   return {
+    revision: window.revision ?? 0,
     from: window.from,
     to: window.to,
     count: window.tracks.length,
@@ -37,10 +47,13 @@ export function toTrackBlock(window: TrackWindowView): TrackBlock {
     population: Uint8Array.from(window.population, (code) => code ?? UNKNOWN),
     pTrapped: Float32Array.from(window.pTrapped, (p) => p ?? Number.NaN),
     start: Uint32Array.from(window.start),
-    frame: Uint32Array.from(window.frame),
+    frame,
     x: Float32Array.from(window.x),
     y: Float32Array.from(window.y),
     bridged: Uint8Array.from(window.flags, (flags) => (flags & POINT_BRIDGED ? 1 : 0)),
+    flags: Uint8Array.from(window.flags),
+    firstFrame: window.firstFrame ? Uint32Array.from(window.firstFrame) : ends((i) => window.start[i]),
+    lastFrame: window.lastFrame ? Uint32Array.from(window.lastFrame) : ends((i) => window.start[i + 1] - 1),
   };
 }
 

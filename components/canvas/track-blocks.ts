@@ -40,6 +40,16 @@ export class TrackBlocks {
     return this.cache.get(Math.floor(frame / BLOCK_FRAMES))?.block ?? null;
   }
 
+  /** The blocks that are here. */
+  kept(): TrackBlock[] {
+    return this.cache.values().map(({ block }) => block);
+  }
+
+  /** Fetches the blocks anew; those that are here are shown until then. */
+  renew(): void {
+    this.cache.renew();
+  }
+
   failure(frame: number): Error | null {
     return this.cache.failure(Math.floor(frame / BLOCK_FRAMES));
   }

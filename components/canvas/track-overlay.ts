@@ -49,7 +49,12 @@ export function drawTrackOverlay(
   if (block && state.chosenTrack !== null) tagChosen(scene, block, state.chosenTrack, frame);
 }
 
-function tagChosen({ ctx, view, well }: OverlayScene, block: TrackBlock, track: number, frame: number): void {
+export function tagChosen(
+  { ctx, view, well }: OverlayScene,
+  block: TrackBlock,
+  track: number,
+  frame: number,
+): void {
   const i = indexOfTrack(block, track);
   const trail = { first: 0, last: 0 };
   if (i < 0 || !trailAt(block, i, frame, 1, trail)) return;

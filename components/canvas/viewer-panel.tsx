@@ -5,7 +5,7 @@ import { Fold } from '@/components/ui/fold';
 import type { TimeLineEvent } from '@/components/ui/time-line-marks';
 import { contrastRange } from './contrast';
 import { ContrastThread } from './contrast-thread';
-import { FrameWell, type OverlayScene } from './frame-well';
+import { FrameWell, type OverlayScene, type WellWork } from './frame-well';
 import { usePlayer } from './use-player';
 import { fitView, zoomAt, type Point, type Size } from './view-box';
 import { ViewerControls } from './viewer-controls';
@@ -40,6 +40,11 @@ interface ViewerPanelProps {
   /** Between the time line and the controls: a legend. */
   children?: ReactNode;
   contrastOpen?: boolean;
+  work?: WellWork;
+  /** Height that the well never exceeds, CSS. */
+  maxHeight?: string;
+  /** Further controls under the well. */
+  controls?: ReactNode;
 }
 
 const nothing = () => undefined;
@@ -83,7 +88,7 @@ export function ViewerPanel(props: ViewerPanelProps) {
         // As high as the picture at this width asks for, but never higher than leaves room to work.
         style={{
           aspectRatio: `${recording.width} / ${recording.height}`,
-          maxHeight: 'min(62vh, 620px)',
+          maxHeight: props.maxHeight ?? 'min(62vh, 620px)',
           minHeight: 240,
         }}
       >
@@ -98,6 +103,7 @@ export function ViewerPanel(props: ViewerPanelProps) {
           onPick={props.onPick ?? nothing}
           onTrackStep={props.onTrackStep}
           onPlay={player.toggle}
+          {...props.work}
           heightClass="h-full"
         >
           <FrameTag store={store} frameIntervalS={recording.frameIntervalS} />
@@ -118,6 +124,7 @@ export function ViewerPanel(props: ViewerPanelProps) {
         onZoom={onZoom}
         onFit={() => store.set({ view: fitView(image, wellSize()) })}
       />
+      {props.controls}
       {props.contrastOpen ? (
         contrast
       ) : (

@@ -17,6 +17,8 @@ export interface ViewerState {
   /** Counts drawn as black and white. */
   low: number;
   high: number;
+  /** How brightness between black and white is shown. */
+  brightness: 'linear' | 'log';
   chosenTrack: number | null;
   chosenEvent: number | null;
   /** A track to bring into the middle as soon as its place is known; null when that is done. */
@@ -46,6 +48,7 @@ export class ViewerStore {
       zoomed: false,
       low: initial.low,
       high: initial.high,
+      brightness: 'linear',
       chosenTrack: null,
       chosenEvent: null,
       bring: null,

@@ -42,6 +42,7 @@ export const frameQuerySchema = z
     low: count('low'),
     high: count('high'),
     width: wholeInAddress('width must be a whole number from 16 to 4096.', { min: 16, max: 4096 }).optional(),
+    scale: z.enum(['linear', 'log'], "scale must be 'linear' or 'log'.").optional(),
   })
   .refine(
     ({ low, high }) => low === undefined || high === undefined || low < high,

@@ -58,12 +58,17 @@ export type AnalysisView = z.infer<typeof analysisViewSchema>;
  * positions are px, flags those of tracking/types (16 = bridged).
  */
 export const trackWindowSchema = z.object({
+  /** Of the tracks; a try-out has none. */
+  revision: count.optional(),
   from: count,
   to: count,
   tracks: z.array(count),
   /** 0 trapped, 1 free, 2 undecided, null not yet known. */
   population: z.array(count.nullable()),
   pTrapped: z.array(z.number().nullable()),
+  /** First and last frame of each whole track; a try-out has none. */
+  firstFrame: z.array(count).optional(),
+  lastFrame: z.array(count).optional(),
   start: z.array(count),
   frame: z.array(count),
   x: z.array(z.number()),

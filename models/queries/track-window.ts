@@ -4,6 +4,8 @@ import { currentTracksRevision, validRows } from './tracks-revision';
 
 /** Tracks of a window of frames. Points of entry `i` are `start[i] .. start[i + 1] - 1`, frame by frame. */
 export interface TrackWindow {
+  /** Of the tracks, that the window was read at. */
+  revision: number;
   count: number;
   /** Numbers of the tracks, ascending. */
   track: Uint32Array;
@@ -11,6 +13,9 @@ export interface TrackWindow {
   population: Uint8Array;
   /** NaN where not known. */
   pTrapped: Float32Array;
+  /** First and last frame of the whole track, which may lie outside the window. */
+  firstFrame: Uint32Array;
+  lastFrame: Uint32Array;
   /** Length count + 1. */
   start: Uint32Array;
   frame: Uint32Array;
@@ -59,18 +64,18 @@ export async function trackWindow(
     // Numbers follow first frames, so those of a window lie close together: a range, not a list of thousands.
     const populations = await queryArrays<PopulationRow>(
       client,
-      `SELECT t.number, t.population, t.p_trapped FROM tracks t
+      `SELECT t.number, t.population, t.p_trapped, t.first_frame, t.last_frame FROM tracks t
        WHERE t.analysis_id = $1 AND t.number BETWEEN $3 AND $4 AND t.first_frame <= $5 AND t.last_frame >= $6
          AND ${validRows('t')}`,
       [...place, numbers[0] ?? 0, numbers.at(-1) ?? -1, to, from],
     );
-    return packWindow(pieces, numbers, populations);
+    return packWindow(revision ?? current, pieces, numbers, populations);
   });
 }
 
 /** Number of the track, frame of the first point of the block, its positions. */
 type BlockRow = [number, number, Buffer];
-type PopulationRow = [number, number | null, number | null];
+type PopulationRow = [number, number | null, number | null, number, number];
 
 function piecesOf(blocks: readonly BlockRow[], from: number, to: number): Piece[] {
   const pieces: Piece[] = [];
@@ -84,6 +89,7 @@ function piecesOf(blocks: readonly BlockRow[], from: number, to: number): Piece[
 }
 
 function packWindow(
+  revision: number,
   pieces: readonly Piece[],
   numbers: readonly number[],
   populations: readonly PopulationRow[],
@@ -91,10 +97,13 @@ function packWindow(
   const count = numbers.length;
   const total = pieces.reduce((sum, piece) => sum + piece.count, 0);
   const window: TrackWindow = {
+    revision,
     count,
     track: Uint32Array.from(numbers),
     population: new Uint8Array(count).fill(POPULATION_UNKNOWN),
     pTrapped: new Float32Array(count).fill(Number.NaN),
+    firstFrame: new Uint32Array(count),
+    lastFrame: new Uint32Array(count),
     start: new Uint32Array(count + 1).fill(total),
     frame: new Uint32Array(total),
     xPx: new Float32Array(total),
@@ -102,11 +111,13 @@ function packWindow(
     flags: new Uint8Array(total),
   };
   const entryOf = new Map(numbers.map((number, entry) => [number, entry]));
-  for (const [number, population, pTrapped] of populations) {
+  for (const [number, population, pTrapped, firstFrame, lastFrame] of populations) {
     const entry = entryOf.get(number);
     if (entry === undefined) continue;
     window.population[entry] = population ?? POPULATION_UNKNOWN;
     window.pTrapped[entry] = pTrapped ?? Number.NaN;
+    window.firstFrame[entry] = firstFrame;
+    window.lastFrame[entry] = lastFrame;
   }
   let at = 0;
   for (const { number, frame, skip, count: points, positions } of pieces) {

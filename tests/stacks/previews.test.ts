@@ -4,7 +4,7 @@ import { caption, makeContactStrip, writeContactStrip } from '@/stacks/contact-s
 import { openStack } from '@/stacks/open-stack';
 import { encodePreview } from '@/stacks/preview';
 import { scaleBar } from '@/stacks/scale-bar';
-import { stretchToBytes } from '@/stacks/stretch';
+import { stretchToBytes, stretchToBytesLog } from '@/stacks/stretch';
 import { readdir } from 'node:fs/promises';
 import { expectWithin } from '../helpers/expect-within';
 import { readBytes } from '../helpers/stack-writers/stack-folder';
@@ -20,6 +20,13 @@ describe('a preview', () => {
     const counts = Float32Array.of(-5, 10, 15, 20, 30, 300);
     expect([...stretchToBytes(counts, 10, 20)]).toEqual([0, 0, 128, 255, 255, 255]);
     expect([...stretchToBytes(counts, 15, 15)]).toEqual([0, 0, 0, 255, 255, 255]);
+  });
+
+  it('on a logarithmic scale keeps black and white and lifts what is faint', () => {
+    const counts = Float32Array.of(-5, 10, 11, 20, 60, 110, 300);
+    // 255 ln(1 + 100 t) / ln 101 for t = 0.01, 0.1, 0.5: by hand.
+    expect([...stretchToBytesLog(counts, 10, 110)]).toEqual([0, 0, 38, 132, 217, 255, 255]);
+    expect([...stretchToBytesLog(counts, 15, 15)]).toEqual([0, 0, 0, 255, 255, 255, 255]);
   });
 
   it('is a grey picture of exactly these levels as PNG', async () => {

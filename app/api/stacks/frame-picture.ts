@@ -31,12 +31,13 @@ export async function framePicture(
   const format = prefersPng(request.headers.get('accept')) ? 'png' : 'webp';
   const { low, high } = contrastOf(recording, query);
   const width = query.width ?? recording.width ?? undefined;
-  const etag = `"${recording.id}-${frame}-${low}-${high}-${width ?? 0}-${format}"`;
+  const scale = query.scale ?? 'linear';
+  const etag = `"${recording.id}-${frame}-${low}-${high}-${scale}-${width ?? 0}-${format}"`;
   const headers = { ETag: etag, 'Cache-Control': CACHE, Vary: VARY };
   if (matches(request.headers.get('if-none-match'), etag))
     return new Response(null, { status: 304, headers });
   const picture = await withStack(recording.id, recording.usePages ?? 0, async (stack) =>
-    encodePreview(await readable(stack.readFrame(frame), frame), { low, high, width, format }),
+    encodePreview(await readable(stack.readFrame(frame), frame), { low, high, scale, width, format }),
   );
   return new Response(new Uint8Array(picture), {
     headers: { ...headers, 'Content-Type': `image/${format}`, 'Content-Length': String(picture.length) },

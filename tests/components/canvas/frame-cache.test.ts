@@ -103,4 +103,21 @@ describe('the cache of frames', () => {
     expect(loads.closed).toContain(0);
     expect(loads.open.size).toBe(0);
   });
+
+  it('shows what was overtaken until the new one is there, and takes nothing for new that was asked for before', async () => {
+    const { load, open, closed, started, settleAll } = fakeLoads();
+    const cache = new FrameCache({ frames: 3, load, onChange: () => undefined, capacity: 5 });
+    cache.want(0, 1);
+    await settleAll();
+    const old = cache.get(0)!;
+    started.length = 0;
+    cache.renew();
+    expect(cache.get(0)).toBe(old);
+    expect(started).toEqual([0, 1, 2]);
+    open.get(0)!.done();
+    await settleAll();
+    expect(cache.get(0)).not.toBe(old);
+    expect(closed).toEqual([0, 1, 2]);
+    expect(cache.values()).toHaveLength(3);
+  });
 });
