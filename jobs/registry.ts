@@ -1,4 +1,5 @@
 import { checkFilesHandler } from './check-files.handler';
+import { composeStripsHandler } from './compose-strips.handler';
 import { detectSpotsHandler } from './detect-spots.handler';
 import { ingestRecordingHandler } from './ingest-recording.handler';
 import type { JobHandler } from './job-context';
@@ -15,6 +16,7 @@ const handlers = [
   measureFlowHandler,
   sendMailHandler,
   checkFilesHandler,
+  composeStripsHandler,
 ] as unknown as JobHandler[];
 
 /** Every kind of work and who does it. */

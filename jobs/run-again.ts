@@ -7,6 +7,7 @@ import { setMailState } from '@/models/queries/mails';
 import { requeueJob, requeueJobsOf, type JobState } from '@/models/queries/requeue-jobs';
 import { selectRow } from '@/models/queries/select';
 import { checkFilesJob } from './check-files';
+import { composeStripsJob } from './compose-strips';
 import { detectSpotsJob } from './detect-spots';
 import { ring } from './doorbell';
 import { ingestRecordingJob } from './ingest-recording';
@@ -26,7 +27,11 @@ const DEFINITIONS: readonly Known[] = [
   measureFlowJob,
   sendMailJob,
   checkFilesJob,
+  composeStripsJob,
 ];
+
+/** Work for an analysis that is done: it fails alone and is asked for again alone. */
+const BESIDE: ReadonlySet<string> = new Set([composeStripsJob.kind]);
 
 interface Row {
   id: string;
@@ -55,8 +60,9 @@ export async function runAgain(
     if (job.state !== 'failed' && !job.waits) {
       throw new LabError('STATE', `This work is ${job.state}: only work that failed can be run again.`);
     }
-    if (job.state === 'failed') await revive(definition, labId, job.subject_id, transaction);
-    if (definition.subject === 'analysis' && job.state === 'failed') {
+    const alone = BESIDE.has(job.kind);
+    if (job.state === 'failed' && !alone) await revive(definition, labId, job.subject_id, transaction);
+    if (definition.subject === 'analysis' && job.state === 'failed' && !alone) {
       await requeueJobsOf(job.subject_id, definition.maxAttempts, transaction);
     } else await requeueJob(job.id, definition.maxAttempts, transaction);
     await ring(job.id, transaction);

@@ -1,9 +1,10 @@
+import { readFile } from 'node:fs/promises';
 import { baseUrl } from '@/lib/env';
 import { formatMoment } from '@/lib/format/time';
 import { invitationPath, makeLinkSecret, NEW_PASSWORD_MS, newPasswordPath } from '@/lib/link-secret';
 import { isPlainAddress } from '@/lib/mail/header-text';
-import { LINK_KINDS, NOTICE_KINDS, type NoticeKind } from '@/lib/mail/mail-kinds';
-import { mailWords, type MailContext } from '@/lib/mail/mail-words';
+import { LINK_KINDS, NOTICE_KINDS, type MailOrder, type NoticeKind } from '@/lib/mail/mail-kinds';
+import { mailWords, stripName, STRIPS_MOST, type MailContext } from '@/lib/mail/mail-words';
 import { renderMail } from '@/lib/mail/render-mail';
 import { replaceLink } from '@/models/queries/account-links';
 import { endMail, readWaitingMail, setMailState, type WaitingMail } from '@/models/queries/mails';
@@ -11,6 +12,7 @@ import { FinalFailure } from './final-failure';
 import type { JobHandler } from './job-context';
 import { deliverMail } from './mail/deliver-mail';
 import { sendMailJob, type SendMailPayload } from './send-mail';
+import { candidateStripFile } from './stack-folder';
 
 export const sendMailHandler: JobHandler<SendMailPayload> = {
   definition: sendMailJob,
@@ -26,13 +28,16 @@ export const sendMailHandler: JobHandler<SendMailPayload> = {
     const site = payload.site ?? baseUrl();
     const link = await makeLink(mail, site);
     const words = mailWords(mail.order, { site, name: mail.name, labName: mail.labName, link });
-    const message = renderMail(words, mail.name);
+    const pictures = await picturesOf(mail.order);
+    const message = renderMail(words, mail.name, pictures.map(({ name }) => name)); // prettier-ignore
     const state = await deliverMail({
       id: mail.id,
       to: { name: mail.name, address: mail.email },
       ...message,
+      pictures,
     });
-    const { subject, text, html } = message;
+    // What is kept to be read here has no parts beside it.
+    const { subject, text, html } = renderMail(words, mail.name);
     const kept = state === 'kept' ? { text, html } : {};
     await commit((transaction) =>
       endMail(mail.id, { state, recipient: mail.email, subject, ...kept }, transaction),
@@ -52,6 +57,19 @@ function isWanted({ order, member, disabled, hasPassword, invitedUntil, noticesO
     default:
       return !isNotice(order.kind) || !noticesOff.includes(order.kind);
   }
+}
+
+/** Strips of a mail on disagreements, as far as they are there. */
+async function picturesOf(order: MailOrder): Promise<{ name: string; png: Buffer }[]> {
+  if (order.kind !== 'review-disagreement') return [];
+  const { recordingId, tracksRevision } = order;
+  const found = await Promise.all(
+    order.candidates.slice(0, STRIPS_MOST).map(async ({ id, event }) => {
+      const png = await readFile(candidateStripFile(recordingId, id, tracksRevision)).catch(() => null);
+      return png ? [{ name: stripName(event), png }] : [];
+    }),
+  );
+  return found.flat();
 }
 
 const isNotice = (kind: string): kind is NoticeKind => (NOTICE_KINDS as readonly string[]).includes(kind);

@@ -18,3 +18,10 @@ export const previewFile = (recordingId: string, preview: number): string =>
 
 /** A strip of eight frames side by side. */
 export const stripFile = (recordingId: string): string => join(stackFolder(recordingId), 'strip.png');
+
+/** Strips of candidates, made anew when the tracks change. */
+export const candidateStripFile = (
+  recordingId: string,
+  candidateId: string,
+  tracksRevision: number,
+): string => join(stackFolder(recordingId), 'candidates', `${candidateId}-${tracksRevision}.png`);

@@ -84,6 +84,11 @@ export const ACTIONS = {
     scope: 'export',
     grants: { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' },
   },
+  // What waits to be judged, by whom, and how well readers agree.
+  'see-review': { scope: 'read', grants: scientists },
+  review: { scope: 'review', grants: { annotator: 'yes' } },
+  settle: { scope: 'review', grants: { principal_investigator: 'yes' } },
+  'assign-review': { scope: 'write', grants: { experimentalist: 'yes', principal_investigator: 'yes' } },
   'see-queue': { scope: 'read', grants: { principal_investigator: 'yes', lab_administrator: 'yes' } },
   'see-storage': { scope: 'read', grants: { principal_investigator: 'yes', lab_administrator: 'yes' } },
   'see-people': { scope: 'read', grants: { principal_investigator: 'yes', lab_administrator: 'yes' } },

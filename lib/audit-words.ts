@@ -27,6 +27,11 @@ export const AUDIT_WORDS: Record<string, string> = {
   'recording.restored': 'restored the recording',
   'analysis.started': 'started an analysis of',
   'analysis.stopped': 'stopped an analysis of',
+  'verdict.given': 'judged a candidate of',
+  'verdict.changed': 'changed their verdict on a candidate of',
+  'verdict.settled': 'settled a candidate of',
+  'review.assigned': 'assigned candidates of',
+  'review.taken-back': 'took back an assignment of',
 };
 
 /** Kinds of acts to choose from: the part before the point takes all of its kind. */
@@ -43,4 +48,6 @@ export const AUDIT_KINDS = [
   { value: 'run', label: 'Runs' },
   { value: 'recording', label: 'Recordings' },
   { value: 'analysis', label: 'Analyses' },
+  { value: 'verdict', label: 'Verdicts' },
+  { value: 'review', label: 'Assignments' },
 ] as const;

@@ -4,6 +4,7 @@ import * as indexPointsByTrack from './20261201121000-index-points-by-track';
 import * as addUploadMetadataAndQuota from './20261201122000-add-upload-metadata-and-quota';
 import * as addMotionMeasures from './20261201130000-add-motion-measures';
 import * as addMailAndFileChecks from './20261201140000-add-mail-and-file-checks';
+import * as addVerdicts from './20261201151000-add-verdicts';
 
 export interface Migration {
   /** File name without its ending: the same for sources and bundles. */
@@ -19,4 +20,5 @@ export const migrations: Migration[] = [
   { name: '20261201122000-add-upload-metadata-and-quota', ...addUploadMetadataAndQuota },
   { name: '20261201130000-add-motion-measures', ...addMotionMeasures },
   { name: '20261201140000-add-mail-and-file-checks', ...addMailAndFileChecks },
+  { name: '20261201151000-add-verdicts', ...addVerdicts },
 ];

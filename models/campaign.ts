@@ -14,6 +14,7 @@ export class Campaign extends Model<InferAttributes<Campaign>, InferCreationAttr
   declare name: string;
   declare description: CreationOptional<string | null>;
   declare tags: CreationOptional<string[]>;
+  declare readings: CreationOptional<number>;
   declare createdBy: CreationOptional<string | null>;
   declare revision: CreationOptional<number>;
   declare deletedAt: CreationOptional<Date | null>;
@@ -28,6 +29,7 @@ export class Campaign extends Model<InferAttributes<Campaign>, InferCreationAttr
         name: DataTypes.TEXT,
         description: DataTypes.TEXT,
         tags: DataTypes.ARRAY(DataTypes.TEXT),
+        readings: DataTypes.SMALLINT,
         createdBy: DataTypes.UUID,
         revision: DataTypes.INTEGER,
         deletedAt: DataTypes.DATE,

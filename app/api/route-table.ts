@@ -15,6 +15,7 @@ import { recipeViewSchema } from '@/lib/views/recipe-view';
 import { recordingViewSchema, uploadViewSchema } from '@/lib/views/recording-view';
 import { runViewSchema } from '@/lib/views/run-view';
 import { LAB_ROUTES } from './lab-routes';
+import { REVIEW_ROUTES } from './review-routes';
 
 export const METHODS = ['GET', 'HEAD', 'POST', 'PUT', 'PATCH', 'DELETE'] as const;
 export type Method = (typeof METHODS)[number];
@@ -277,6 +278,7 @@ export const ROUTES = {
     status: 201,
   },
 
+  ...REVIEW_ROUTES,
   ...LAB_ROUTES,
 } as const satisfies Record<string, ApiRoute>;
 

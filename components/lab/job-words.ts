@@ -6,6 +6,7 @@ const KIND_WORDS: Record<string, string> = {
   'measure-flow': 'measure the flow',
   'send-mail': 'send a mail',
   'check-files': 'check stored files',
+  'compose-strips': 'compose strips of candidates',
 };
 
 /** What a piece of work does: `find spots, chunk 3`. */

@@ -1,5 +1,6 @@
 import { setPriority } from 'node:os';
 import type { FromChild, TaskInput, TaskName, TaskOutput, ToChild } from './tasks';
+import { composeStrips } from './steps/compose-strips';
 import { detectChunk } from './steps/detect-chunk';
 import { inspectStack } from './steps/inspect-stack';
 import { linkTracks } from './steps/link-tracks';
@@ -10,7 +11,15 @@ import type { WorkContext } from './steps/work-context';
 
 type Work = { [K in TaskName]: (input: TaskInput<K>, context: WorkContext) => Promise<TaskOutput<K>> };
 
-const WORK: Work = { inspectStack, measureImage, detectChunk, linkTracks, measureFlow, tryRecipe };
+const WORK: Work = {
+  inspectStack,
+  measureImage,
+  detectChunk,
+  linkTracks,
+  measureFlow,
+  tryRecipe,
+  composeStrips,
+};
 
 /** Progress is told so often at most, ms. */
 const TELL_MS = 200;

@@ -1,4 +1,6 @@
 import type { ImageFacts } from '@/lib/analysis-facts';
+import type { Film } from '@/lib/review/film';
+import type { FilmPathView } from '@/lib/views/review-view';
 import type { StackReport, StackSource } from '@/stacks/stack-report';
 import type { FlowMeasures, ImageSize } from '@/tracking/flow-measures';
 import type { Conditions, Recipe, RecipeRequest, Spots, Tracks } from '@/tracking/types';
@@ -79,6 +81,14 @@ export interface TryRecipeOutput {
   tracks: Tracks;
 }
 
+export interface ComposeStripsInput {
+  stackDir: string;
+  contrast: { low: number; high: number };
+  pixelSizeM: number;
+  frameIntervalS: number;
+  strips: { path: string; film: Film; paths: FilmPathView[] }[];
+}
+
 export interface Tasks {
   inspectStack: { input: InspectInput; output: StackReport };
   measureImage: { input: MeasureImageInput; output: MeasureImageOutput };
@@ -86,6 +96,8 @@ export interface Tasks {
   linkTracks: { input: LinkTracksInput; output: Tracks };
   measureFlow: { input: MeasureFlowInput; output: FlowMeasures };
   tryRecipe: { input: TryRecipeInput; output: TryRecipeOutput };
+  /** How many were composed. */
+  composeStrips: { input: ComposeStripsInput; output: number };
 }
 export type TaskName = keyof Tasks;
 export type TaskInput<K extends TaskName> = Tasks[K]['input'];

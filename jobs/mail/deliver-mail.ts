@@ -9,6 +9,8 @@ export interface OutgoingMail {
   subject: string;
   text: string;
   html: string;
+  /** Shown inside the words, by name. */
+  pictures?: { name: string; png: Buffer }[];
 }
 
 /** A mail server that is slower than this counts as away; the worker has other work to do. */
@@ -48,7 +50,7 @@ export async function deliverMail(
   return 'sent';
 }
 
-function messageOf({ id, to, subject, text, html }: OutgoingMail, { from }: MailSettings) {
+function messageOf({ id, to, subject, text, html, pictures = [] }: OutgoingMail, { from }: MailSettings) {
   return {
     from,
     to,
@@ -57,6 +59,13 @@ function messageOf({ id, to, subject, text, html }: OutgoingMail, { from }: Mail
     subject,
     text,
     html,
+    attachments: pictures.map(({ name, png }) => ({
+      filename: name,
+      cid: name,
+      content: png,
+      contentType: 'image/png',
+      contentDisposition: 'inline' as const,
+    })),
     // The same at each try, so that mail programs can tell a repetition.
     messageId: `<${id}@${from.address.split('@')[1]}>`,
     headers: { 'Auto-Submitted': 'auto-generated' },

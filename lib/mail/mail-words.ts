@@ -1,3 +1,4 @@
+import { countOf } from '../format/count';
 import type { MailOrder } from './mail-kinds';
 
 /** A mail before it is given a form: the same words go into its plain text and its HTML. */
@@ -6,6 +7,8 @@ export interface MailWords {
   paragraphs: string[];
   /** The one thing to do. */
   action: { label: string; url: string } | null;
+  /** Pictures that travel with it, named as their attachments are. */
+  pictures?: { name: string; alt: string }[];
   /** Why it came and how to have fewer. */
   foot: string;
 }
@@ -20,7 +23,18 @@ export interface MailContext {
   link: { url: string; until: string } | null;
 }
 
-const YOUR_NOTICES = 'You started it. Which notices come by mail is on your account page: ';
+const NOTICES = 'Which notices come by mail is on your account page: ';
+const YOUR_NOTICES = `You started it. ${NOTICES}`;
+
+/** Strips that one mail carries at most; the rest is a click away. */
+export const STRIPS_MOST = 4;
+export const stripName = (event: number): string => `candidate-${event}.png`;
+
+function eventsText(candidates: readonly { event: number }[]): string {
+  const shown = candidates.slice(0, 12).map(({ event }) => String(event));
+  const more = candidates.length - shown.length;
+  return more > 0 ? `${shown.join(', ')} and ${more} more` : shown.join(', ');
+}
 
 /** The words of a mail. @throws Error for a mail that needs a link and has none. */
 export function mailWords(order: MailOrder, context: MailContext): MailWords {
@@ -90,6 +104,46 @@ export function mailWords(order: MailOrder, context: MailContext): MailWords {
         action: { label: 'See what went wrong', url: `${site}/analyses/${order.analysisId}` },
         foot: `${YOUR_NOTICES}${site}/account`,
       };
+    case 'review-assigned': {
+      const count = countOf(order.candidates, 'candidate');
+      return {
+        subject: `${count} to judge: ${order.recordingName}`,
+        paragraphs: [
+          `${order.byName} gives you ${count} of ${order.recordingName}, run ${order.runName}, to judge.`,
+          ...(order.dueOn ? [`They are due on ${order.dueOn}.`] : []),
+        ],
+        action: { label: 'Judge them', url: `${site}/review/${order.analysisId}` },
+        foot: `They were given to you. ${NOTICES}${site}/account`,
+      };
+    }
+    case 'review-disagreement': {
+      const { candidates } = order;
+      const count = countOf(candidates.length, 'candidate');
+      return {
+        subject: `Readers disagree on ${count}: ${order.recordingName}`,
+        paragraphs: [
+          `Readers disagree on ${count} of ${order.recordingName}, run ${order.runName}, in ${labName}: ${eventsText(candidates)}.`,
+          'Look at what each of them said, and settle it with a reason.',
+        ],
+        pictures: candidates.slice(0, STRIPS_MOST).map(({ event }) => ({
+          name: stripName(event),
+          alt: `Frames around closest approach of candidate ${event}, with both tracks`,
+        })),
+        action: { label: 'Settle them', url: `${site}/review/${order.analysisId}/settle` },
+        foot: `You settle disagreements in ${labName}. ${NOTICES}${site}/account`,
+      };
+    }
+    case 'review-done': {
+      const who = order.readerName
+        ? `${order.readerName} has judged all candidates that were given to them`
+        : 'Every candidate has its readings';
+      return {
+        subject: `Candidates judged: ${order.recordingName}`,
+        paragraphs: [`${who}: ${order.recordingName}, run ${order.runName}, in ${labName}.`],
+        action: { label: 'See the analysis', url: `${site}/analyses/${order.analysisId}` },
+        foot: `${NOTICES}${site}/account`,
+      };
+    }
     case 'files-damaged':
       return {
         subject: `Stored files damaged in ${labName}`,

@@ -5,6 +5,12 @@ export const campaignCreateSchema = z.strictObject({
   name: nameSchema,
   description: noteSchema.nullish(),
   tags: tagsSchema.optional(),
+  /** How many people judge each reconnection candidate. */
+  readings: z
+    .int('readings must be 1, 2 or 3.')
+    .min(1, 'readings must be 1, 2 or 3.')
+    .max(3, 'readings must be 1, 2 or 3.')
+    .optional(),
 });
 export const campaignPatchSchema = campaignCreateSchema.partial();
 export type CampaignCreate = z.infer<typeof campaignCreateSchema>;

@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { REVIEW_STATES, VERDICTS } from '../review/verdict-words';
 import { recipeRequestSchema } from '../schemas/recipe';
 import { ANALYSIS_STAGES } from '../analysis-facts';
 import { itemFields, personSchema } from './common';
@@ -111,6 +112,11 @@ export const candidateViewSchema = z.object({
   pChance: z.number().nullable(),
   qValue: z.number().nullable(),
   accepted: z.boolean(),
+  /** What people settled; null while that is open, or kept from a reader. */
+  verdict: z.enum(VERDICTS).nullable(),
+  review: z.enum(REVIEW_STATES),
+  /** What the viewer has said. */
+  ownVerdict: z.enum(VERDICTS).nullable(),
   /** What it fails, in plain sentences. */
   failed: z.array(z.string()),
   series: z.object({

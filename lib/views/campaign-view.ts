@@ -6,6 +6,8 @@ export const campaignViewSchema = z.object({
   name: z.string(),
   description: z.string().nullable(),
   tags: z.array(z.string()),
+  /** How many people judge each reconnection candidate. */
+  readings: z.int(),
   createdBy: personSchema.nullable(),
   deletedAt: z.iso.datetime().nullable(),
   runs: z.int(),

@@ -1,7 +1,7 @@
 import { QueryTypes, type Transaction } from 'sequelize';
 import type { AnalysisSummary, CandidateFacts, ImageFacts } from '@/lib/analysis-facts';
 import { newId } from '@/lib/ids';
-import type { ReconnectionRow } from '@/lib/tables/reconnections-csv';
+import type { ReconnectionRow, VerdictText } from '@/lib/tables/reconnections-csv';
 import type { Estimate } from '@/tracking/estimates/estimate';
 import type { FlowMeasures, MotionMeasures, PairSummary, PopulationSummary } from '@/tracking/flow-measures';
 import type { Conditions, Recipe, RecipeRequest } from '@/tracking/types';
@@ -156,11 +156,15 @@ export async function readMeasures(
   return { ...rows[0], populations, pairs };
 }
 
-/** Rows of `reconnections.csv`, in the order of their numbers. */
-export async function readReconnections(labId: string, analysisId: string): Promise<ReconnectionRow[]> {
-  const rows = await getSequelize().query<{ facts: CandidateFacts }>(
-    'SELECT facts FROM candidates WHERE lab_id = $1 AND analysis_id = $2 ORDER BY event',
+/** Rows of `reconnections.csv` in the order of their numbers, and what people settled of each. */
+export async function readReconnections(
+  labId: string,
+  analysisId: string,
+): Promise<{ rows: ReconnectionRow[]; verdicts: VerdictText[] }> {
+  const rows = await getSequelize().query<{ facts: CandidateFacts; verdict: VerdictText | null }>(
+    `SELECT c.facts, o.verdict FROM candidates c JOIN candidate_outcomes o ON o.candidate_id = c.id
+     WHERE c.lab_id = $1 AND c.analysis_id = $2 ORDER BY c.event`,
     { bind: [labId, analysisId], type: QueryTypes.SELECT },
   );
-  return rows.map((row) => row.facts);
+  return { rows: rows.map(({ facts }) => facts), verdicts: rows.map(({ verdict }) => verdict ?? '') };
 }

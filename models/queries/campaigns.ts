@@ -17,6 +17,7 @@ interface Row extends ItemRow, Made {
   name: string;
   description: string | null;
   tags: string[];
+  readings: number;
   deleted_at: Date | null;
   runs: number;
   recordings: number;
@@ -27,7 +28,7 @@ const RUNS = `(SELECT count(*)::int FROM runs r WHERE r.campaign_id = c.id AND r
 const RECORDINGS = `(SELECT count(*)::int FROM recordings g JOIN runs r ON r.id = g.run_id
   WHERE r.campaign_id = c.id AND r.deleted_at IS NULL AND g.deleted_at IS NULL)`;
 
-const SELECT = `c.id, c.name, c.description, c.tags, c.revision, c.created_at, c.updated_at, c.deleted_at,
+const SELECT = `c.id, c.name, c.description, c.tags, c.readings, c.revision, c.created_at, c.updated_at, c.deleted_at,
   ${personJson('u')} AS created_by, ${RUNS} AS runs, ${RECORDINGS} AS recordings,
   (SELECT json_build_object(
      'running', count(*) FILTER (WHERE a.state IN ('waiting', 'running')),
@@ -43,6 +44,7 @@ function viewOf(row: Row): CampaignView {
     name: row.name,
     description: row.description,
     tags: row.tags,
+    readings: row.readings,
     createdBy: row.created_by,
     deletedAt: iso(row.deleted_at),
     runs: row.runs,
@@ -88,11 +90,11 @@ export async function createCampaign(
   maker: { labId: string; userId: string },
   input: CampaignCreate,
 ): Promise<CampaignView> {
-  const { name, description = null, tags = [] } = input;
+  const { name, description = null, tags = [], readings = 1 } = input;
   const { labId, userId } = maker;
   const id = newId();
   await getSequelize().transaction(async (transaction) => {
-    const values = { id, labId, name, description, tags, createdBy: userId };
+    const values = { id, labId, name, description, tags, readings, createdBy: userId };
     await models().Campaign.create(values, { transaction });
     const entry = { action: 'campaign.made', subjectKind: 'campaign', subjectId: id };
     await writeAudit({ labId, userId, ...entry }, transaction);

@@ -3,16 +3,28 @@ import type { CandidateFacts } from '@/lib/analysis-facts';
 import type { candidateListQuery } from '@/lib/schemas/list-query';
 import type { CandidateView } from '@/lib/views/analysis-view';
 import type { ListView } from '@/lib/views/common';
+import {
+  OUTCOME_COLUMNS,
+  outcomeJoins,
+  revisionSeen,
+  seenOutcome,
+  type OutcomeRow,
+  type Sight,
+} from './candidate-sight';
 import { listPage, type ListSource } from './list-page';
 import { itemOf, type ItemRow } from './person';
 import { measuresOf } from './read-results';
 
-interface Row extends ItemRow {
+export interface CandidateRow extends ItemRow, OutcomeRow {
   analysis_id: string;
   event: number;
   accepted: boolean;
   facts: CandidateFacts;
 }
+
+/** Columns of `CandidateRow`, from `candidates c` with `outcomeJoins`. */
+export const CANDIDATE_COLUMNS = `c.id, c.analysis_id, c.event, c.accepted, c.facts, c.revision, c.created_at,
+  c.updated_at, ${OUTCOME_COLUMNS}`;
 
 const SORTS: ListSource['sorts'] = {
   event: { by: 'c.event', type: 'int' },
@@ -29,15 +41,16 @@ export async function listCandidates(
   labId: string,
   analysisId: string,
   query: z.output<typeof candidateListQuery>,
+  sight: Sight,
 ): Promise<ListView<CandidateView>> {
   await measuresOf(labId, analysisId);
-  const bind: unknown[] = [labId, analysisId];
+  const bind: unknown[] = [labId, analysisId, sight.userId];
   const where = ['c.lab_id = $1', 'c.analysis_id = $2'];
   if (query.accepted) where.push(`c.accepted = $${bind.push(query.accepted === 'true')}`);
-  const page = await listPage<Row>(
+  const page = await listPage<CandidateRow>(
     {
-      select: 'c.id, c.analysis_id, c.event, c.accepted, c.facts, c.revision, c.created_at, c.updated_at',
-      from: 'candidates c',
+      select: CANDIDATE_COLUMNS,
+      from: `candidates c ${outcomeJoins('$3')}`,
       where,
       bind,
       idColumn: 'c.id',
@@ -45,7 +58,7 @@ export async function listCandidates(
     },
     query,
   );
-  return { items: page.rows.map(viewOf), nextCursor: page.nextCursor };
+  return { items: page.rows.map((row) => candidateView(row, sight)), nextCursor: page.nextCursor };
 }
 
 function sideView(fit: CandidateFacts['before']): CandidateView['before'] {
@@ -54,10 +67,12 @@ function sideView(fit: CandidateFacts['before']): CandidateView['before'] {
   return { points, amplitude, amplitudeError, exponent, exponentError };
 }
 
-function viewOf(row: Row): CandidateView {
+/** A candidate as this person may see it. */
+export function candidateView(row: CandidateRow, sight: Sight): CandidateView {
   const { facts } = row;
   return {
     ...itemOf(row),
+    revision: revisionSeen(row.revision, row),
     analysisId: row.analysis_id,
     event: row.event,
     trackA: facts.trackA,
@@ -72,6 +87,7 @@ function viewOf(row: Row): CandidateView {
     pChance: facts.pChance,
     qValue: facts.qValue,
     accepted: row.accepted,
+    ...seenOutcome(row, sight),
     failed: facts.failed,
     series: {
       frame: facts.series.frame,

@@ -23,7 +23,7 @@ export async function serverTables(analysis: Analysis): Promise<Record<string, s
       streamVelocitiesCsv(streamTracks(labId, id, 0), recipe.lagsFrames, conditions),
     ),
     'velocity-pdf.csv': await whole(velocityPdfCsv(measures.pdfs)),
-    'reconnections.csv': await whole(reconnectionsCsv(await readReconnections(labId, id))),
+    'reconnections.csv': await whole(reconnectionsCsv((await readReconnections(labId, id)).rows)),
     'estimates.json': estimatesJson(measures.estimates),
   };
 }

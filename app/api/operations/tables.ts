@@ -56,7 +56,8 @@ export async function velocityPdfTable(request: TableRequest): Promise<Pieces> {
 
 export async function reconnectionsTable(request: TableRequest): Promise<Pieces> {
   await measuresFor(request);
-  return reconnectionsCsv(await readReconnections(request.labId, request.analysisId));
+  const { rows, verdicts } = await readReconnections(request.labId, request.analysisId);
+  return reconnectionsCsv(rows, (event) => verdicts[event]);
 }
 
 export async function estimatesTable(request: TableRequest): Promise<Pieces> {

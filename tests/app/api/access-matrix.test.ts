@@ -10,6 +10,7 @@ import { closeSessionLocks } from '@/models/session-locks';
 import { call, routeModule, routePaths, webSettings } from '../../helpers/call-route';
 import { freshDatabase, type FreshDatabase } from '../../helpers/fresh-database';
 import { makeAnalysis, makeRecording, makeRun, type LabRows } from '../../helpers/lab-rows';
+import { makeAssignment, makeCandidates } from '../../helpers/candidates';
 import { makeTestLab, type TestLab } from '../../helpers/test-lab';
 
 /** Ids of one thing of each kind, by the name of the parameter that takes it. */
@@ -51,6 +52,8 @@ async function makeThings(): Promise<Things> {
     state: 'done',
     stage: 'done',
   });
+  const [candidateId] = await makeCandidates(lab, analysis.id, 1);
+  const assignmentId = await makeAssignment(lab, analysis.id, own.people.annotator.userId);
   // Somebody who asks nothing here: a member that is removed can't ask any more.
   const guest = await models().User.create({ id: newId(), name: 'Guest', email: `${newId()}@lab.test` });
   const membership = await models().Membership.create({
@@ -98,6 +101,8 @@ async function makeThings(): Promise<Things> {
     runId: run.id,
     recordingId: recording.id,
     analysisId: analysis.id,
+    candidateId,
+    assignmentId,
     memberId: membership.id,
     tokenId: token.id,
     upload: upload.id,
@@ -124,7 +129,14 @@ const BODIES: Partial<Record<RouteKey, unknown>> = {
   'PATCH /people/{memberId}': { roles: ['analyst'] },
   'POST /people': { name: 'New', email: 'new@lab.test', roles: ['analyst'] },
   'POST /tokens': { name: 'New' },
+  'PUT /candidates/{candidateId}/verdict': { verdict: 'yes' },
+  'POST /candidates/{candidateId}/settlement': { verdict: 'yes', reason: 'Seen.' },
 };
+/** Bodies that name things. */
+const bodyOf = (key: RouteKey): unknown =>
+  key === 'POST /assignments'
+    ? { analysis: things.analysisId, reader: own.people.annotator.userId }
+    : BODIES[key];
 
 function send(key: RouteKey, token: string | undefined) {
   const [method, path] = split(key);
@@ -141,7 +153,7 @@ function send(key: RouteKey, token: string | undefined) {
     headers['upload-offset'] = '5';
   }
   const query = path.endsWith('/tracks') ? '?from=0&to=1' : '';
-  return call(method, pathOf(key) + query, { token, headers, json: BODIES[key] });
+  return call(method, pathOf(key) + query, { token, headers, json: bodyOf(key) });
 }
 
 /** What a refused HEAD has no body for stands in its status alone. */
@@ -151,7 +163,8 @@ async function problemOf(response: Response) {
 }
 
 const keys = Object.keys(ROUTES) as RouteKey[];
-const takesThing = (key: RouteKey) => key.includes('{') || key === 'POST /uploads';
+const takesThing = (key: RouteKey) =>
+  key.includes('{') || key === 'POST /uploads' || key === 'POST /assignments';
 
 describe('who may do what over HTTP', () => {
   it('every route file on disk stands in the table with each of its methods, and the table names no other', async () => {
