@@ -1,4 +1,5 @@
 import { createHash } from 'node:crypto';
+import type { Transaction } from 'sequelize';
 import { LabError } from '@/lib/errors';
 import { execute, selectRow } from '@/models/queries/select';
 import type { Viewer } from './viewer';
@@ -12,6 +13,16 @@ export interface StoredAnswer {
   body: unknown;
 }
 
+/** What is known of a request that may have been sent before. */
+export interface RequestKey {
+  /** What an earlier request with this key has made, whose answer was lost with its process. */
+  madeBefore: string | null;
+  /** Writes down what is made, in the transaction that makes it: both come true or neither. */
+  remember(id: string, transaction: Transaction): Promise<void>;
+}
+
+const NO_KEY: RequestKey = { madeBefore: null, remember: async () => undefined };
+
 /**
  * Lets the same POST, sent again with the same `Idempotency-Key`, get the first one's answer
  * instead of a second effect. An answer that failed is not kept: the request may be tried again.
@@ -22,19 +33,23 @@ export async function once(
   viewer: Viewer,
   key: string | null,
   fingerprint: string,
-  run: () => Promise<StoredAnswer>,
+  run: (key: RequestKey) => Promise<StoredAnswer>,
 ): Promise<StoredAnswer & { replayed: boolean }> {
-  if (key === null) return { ...(await run()), replayed: false };
+  if (key === null) return { ...(await run(NO_KEY)), replayed: false };
   if (!KEY.test(key)) {
     throw new LabError('QUERY', 'Idempotency-Key must be 1 to 200 visible ASCII characters.');
   }
   const requestHash = createHash('sha256').update(fingerprint).digest('hex');
   const id = [viewer.userId, viewer.labId, key];
-  const earlier = await claim(id, requestHash);
-  if (earlier) return { ...earlier, replayed: true };
+  const claimed = await claim(id, requestHash);
+  if ('status' in claimed) return { ...claimed, replayed: true };
   const where = 'WHERE user_id = $1 AND lab_id = $2 AND key = $3';
   try {
-    const answer = await run();
+    const answer = await run({
+      madeBefore: claimed.madeBefore,
+      remember: (made, transaction) =>
+        execute(`UPDATE idempotency_keys SET made_id = $4 ${where}`, [...id, made], transaction),
+    });
     await execute(`UPDATE idempotency_keys SET status = $4, body = $5::jsonb ${where}`, [
       ...id,
       answer.status,
@@ -42,22 +57,28 @@ export async function once(
     ]);
     return { ...answer, replayed: false };
   } catch (thrown) {
-    await execute(`DELETE FROM idempotency_keys ${where} AND status IS NULL`, id);
+    // What was made stays made, whatever failed after it. With the database away the key is free after its time.
+    const forget = `DELETE FROM idempotency_keys ${where} AND status IS NULL AND made_id IS NULL`;
+    await execute(forget, id).catch(() => undefined);
     throw thrown;
   }
 }
 
 /** Takes the key, or returns the answer that it has already. */
-async function claim(id: string[], requestHash: string): Promise<StoredAnswer | null> {
-  const taken = await selectRow(
+async function claim(
+  id: string[],
+  requestHash: string,
+): Promise<StoredAnswer | { madeBefore: string | null }> {
+  const taken = await selectRow<{ made_id: string | null }>(
     `INSERT INTO idempotency_keys (user_id, lab_id, key, request_hash) VALUES ($1, $2, $3, $4)
      ON CONFLICT (user_id, lab_id, key) DO UPDATE SET created_at = now()
        WHERE idempotency_keys.status IS NULL AND idempotency_keys.request_hash = $4
-         AND idempotency_keys.created_at < now() - make_interval(secs => $5)
-     RETURNING key`,
+         AND (idempotency_keys.made_id IS NOT NULL
+           OR idempotency_keys.created_at < now() - make_interval(secs => $5))
+     RETURNING made_id`,
     [...id, requestHash, DEAD_AFTER_S],
   );
-  if (taken) return null;
+  if (taken) return { madeBefore: taken.made_id };
   const row = await selectRow<{ request_hash: string; status: number | null; body: unknown }>(
     'SELECT request_hash, status, body FROM idempotency_keys WHERE user_id = $1 AND lab_id = $2 AND key = $3',
     id,

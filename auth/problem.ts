@@ -1,8 +1,9 @@
-import { UniqueConstraintError, ConnectionError, ConnectionAcquireTimeoutError } from 'sequelize';
+import { UniqueConstraintError, ConnectionAcquireTimeoutError } from 'sequelize';
 import type { ZodError } from 'zod';
 import { LabError, type ErrorCode, type FieldError } from '@/lib/errors';
 import { CONDITION_BOUNDS } from '@/lib/schemas/conditions';
 import { NAME_LENGTH_MAX } from '@/lib/schemas/text';
+import { isDatabaseAway } from '@/models/database-away';
 import { StaleRevisionError } from '@/models/queries/stale-revision';
 
 const TITLES: Partial<Record<number, string>> = {
@@ -45,8 +46,15 @@ export function asLabError(thrown: unknown): LabError {
       headers: { 'Retry-After': '5' },
     });
   }
-  if (thrown instanceof ConnectionError) {
+  if (isDatabaseAway(thrown)) {
     return new LabError('UNAVAILABLE', 'The database does not answer. Try again in a moment.', {
+      cause: thrown,
+      headers: { 'Retry-After': '5' },
+    });
+  }
+  // Too many open files or sockets: over in a moment, and nobody's fault.
+  if (['EMFILE', 'ENFILE'].includes(String((thrown as { code?: unknown } | null)?.code))) {
+    return new LabError('BUSY', 'The server is busy. Try again in a moment.', {
       cause: thrown,
       headers: { 'Retry-After': '5' },
     });

@@ -2,9 +2,11 @@ import type { z } from 'zod';
 import type { Action } from '@/lib/access';
 import { LabError } from '@/lib/errors';
 import { isId, newId } from '@/lib/ids';
+import { untilDatabaseIsBack } from '@/models/database-away';
+import { withRetries } from '@/models/with-retries';
 import { Answer, answerResponse } from './answer';
 import { assertOwnSite } from './csrf';
-import { once } from './idempotency';
+import { once, type RequestKey } from './idempotency';
 import { readIfMatch } from './if-match';
 import { log } from './log';
 import { asLabError, fieldsError, problemResponse, queryError } from './problem';
@@ -40,9 +42,13 @@ export interface MemberContext<Body, Query> {
   /** Revisions that `If-Match` names; null for any. */
   ifMatch: number[] | null;
   requestId: string;
+  /** Of a POST with an `Idempotency-Key`; null for any other request. */
+  key: RequestKey | null;
 }
 
 const SAFE_METHODS = new Set(['GET', 'HEAD', 'OPTIONS']);
+/** A connection that was cut is replaced at once; a database that recovers takes longer, ms. */
+const READ_PATIENCE_MS = 3_000;
 
 /**
  * Wraps a route handler: who asks (401), may they (403), does the request come from our own pages,
@@ -58,14 +64,21 @@ export function withMember<Body extends z.ZodType, Query extends z.ZodType>(
     const startedMs = performance.now();
     let viewer: Viewer | null = null;
     let response: Response;
-    try {
+    const attempt = async () => {
       viewer = await viewerFrom(request.headers);
       if (!viewer) throw signedOut();
       assertMay(viewer, route.action);
       if (viewer.via === 'session') assertOwnSite(request);
       if (route.counted !== false && !SAFE_METHODS.has(request.method)) await countRequest(viewer.userId);
-      response = await answerTo(route, handler, { request, viewer, requestId, params: await plain(params) });
-      await renew(response, viewer);
+      const given = { request, viewer, requestId, params: await plain(params) };
+      const answer = await answerTo(route, handler, given);
+      await renew(answer, viewer);
+      return answer;
+    };
+    try {
+      // Reading can be tried again; whether a change got through before the database went away nobody knows.
+      const patienceMs = SAFE_METHODS.has(request.method) ? READ_PATIENCE_MS : 0;
+      response = await untilDatabaseIsBack(attempt, patienceMs);
     } catch (thrown) {
       const error = asLabError(thrown);
       if (error.status >= 500) {
@@ -80,8 +93,8 @@ export function withMember<Body extends z.ZodType, Query extends z.ZodType>(
         path: pathOf(request),
         status: response.status,
         ms: Math.round(performance.now() - startedMs),
-        user: viewer?.userId,
-        lab: viewer?.labId,
+        user: (viewer as Viewer | null)?.userId,
+        lab: (viewer as Viewer | null)?.labId,
       },
       'request',
     );
@@ -103,15 +116,19 @@ async function answerTo<Body extends z.ZodType, Query extends z.ZodType>(
   const query = readQuery(request, route.query);
   const ifMatch = route.ifMatch ? readIfMatch(request.headers.get('if-match')) : null;
   const { body, text } = route.body ? await readBody(request, route.body) : { body: undefined, text: '' };
-  const run = async () =>
-    handler({ ...base, body: body as z.output<Body>, query: query as z.output<Query>, ifMatch });
+  const handle = async (key: RequestKey | null) =>
+    handler({ ...base, body: body as z.output<Body>, query: query as z.output<Query>, ifMatch, key });
+  // Two changes that lock the same rows crosswise: PostgreSQL gives one of them up, which nobody need know. A body
+  // that is still to be read can't be read twice.
+  const run = (key: RequestKey | null) =>
+    route.body || !request.body ? withRetries(() => handle(key)) : handle(key);
   if (request.method !== 'POST' || route.idempotent === false) {
-    return toResponse(await run(), requestId);
+    return toResponse(await run(null), requestId);
   }
   let streamed: Response | null = null;
   const key = request.headers.get('idempotency-key');
-  const answer = await once(viewer, key, `POST ${pathOf(request)}\n${text}`, async () => {
-    const result = await run();
+  const answer = await once(viewer, key, `POST ${pathOf(request)}\n${text}`, async (requestKey) => {
+    const result = await run(requestKey);
     if (result instanceof Response) streamed = result;
     const { status, body: made, headers } = asAnswer(result);
     return { status, body: { made, headers } };

@@ -1,10 +1,11 @@
 import type { Transaction } from 'sequelize';
 import { getSequelize } from '@/models/database';
+import { untilDatabaseIsBack } from '@/models/database-away';
 import { endClaim, lockClaim, type JobClaim } from '@/models/queries/job-claims';
 import type { RunOptions } from './compute/pool';
 import type { TaskInput, TaskName, TaskOutput } from './compute/tasks';
 import type { JobDefinition, JobSubject } from './job-definition';
-import { withRetries } from './with-retries';
+import { withRetries } from '@/models/with-retries';
 
 /** What a handler can do. */
 export interface JobContext<Payload> {
@@ -54,18 +55,22 @@ export async function lockSubject(
   });
 }
 
+/** What was computed is worth a wait: a database that is killed recovers in seconds, ms. */
+export const WAIT_FOR_DATABASE_MS = 120_000;
+
 /** See `JobContext.commit`. */
 export function commitClaim(
   claim: JobClaim,
   subject: JobSubject,
   write: (transaction: Transaction) => Promise<void>,
 ): Promise<void> {
-  return withRetries(() =>
+  const commit = () =>
     getSequelize().transaction(async (transaction) => {
       await lockSubject(subject, claim.subjectId, transaction);
       await lockClaim(claim, transaction);
       await write(transaction);
       await endClaim(claim, { state: 'done' }, transaction);
-    }),
-  );
+    });
+  // A commit that came through while its answer was lost is found out by the claim, which it has ended.
+  return untilDatabaseIsBack(() => withRetries(commit), WAIT_FOR_DATABASE_MS);
 }

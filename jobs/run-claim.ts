@@ -1,4 +1,5 @@
 import { getSequelize } from '@/models/database';
+import { isDatabaseAway, untilDatabaseIsBack } from '@/models/database-away';
 import {
   endClaim,
   holdsClaim,
@@ -11,11 +12,17 @@ import {
 } from '@/models/queries/job-claims';
 import { ComputeError } from './compute/compute-error';
 import type { ComputePool } from './compute/pool';
-import { commitClaim, lockSubject, type JobContext, type JobHandler } from './job-context';
+import {
+  commitClaim,
+  lockSubject,
+  WAIT_FOR_DATABASE_MS,
+  type JobContext,
+  type JobHandler,
+} from './job-context';
 import type { JobSubject } from './job-definition';
 import type { Say } from './say';
 import { FinalFailure } from './final-failure';
-import { withRetries } from './with-retries';
+import { withRetries } from '@/models/with-retries';
 
 export interface ClaimTimes {
   /** Between two signs of life. */
@@ -25,6 +32,9 @@ export interface ClaimTimes {
   /** Pause before the second try; doubles with each further try. */
   backOffMs: number;
 }
+
+/** Work that drags the database down with it must end too. */
+const ATTEMPTS_MOST = 30;
 
 /** How the work on a claim ended. */
 export type ClaimEnd = 'done' | 'put-back' | 'given-up' | 'lost' | 'released';
@@ -65,6 +75,11 @@ export async function runClaim(
       return 'released';
     }
     if (ending.signal.aborted) return 'lost';
+    if (isDatabaseAway(cause) && claim.attempt < ATTEMPTS_MOST) {
+      // Nobody's failure either: given back as soon as there is somebody to give it back to.
+      await untilDatabaseIsBack(() => releaseClaim(claim), WAIT_FOR_DATABASE_MS);
+      return 'released';
+    }
     say('error', 'work failed', { job: claim.id, kind: claim.kind, attempt: claim.attempt, cause });
     return await endFailed(claim, handler, reasonOf(cause), times.backOffMs);
   } finally {

@@ -4,6 +4,7 @@ import { may } from '@/auth/viewer';
 import { QueryProvider } from '@/components/data/query-provider';
 import { Head } from '@/components/shell/head';
 import type { Place } from '@/components/shell/places';
+import { SignInAgain } from '@/components/shell/sign-in-again';
 import { switchLab } from './actions';
 
 /** Head and store of answers around every page of a laboratory. */
@@ -26,6 +27,7 @@ export default async function LabLayout({ children }: { children: ReactNode }) {
         switchLab={switchLab}
       />
       {children}
+      <SignInAgain email={viewer.email} />
     </QueryProvider>
   );
 }

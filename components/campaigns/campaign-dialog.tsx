@@ -2,6 +2,7 @@
 
 import { useRouter } from 'next/navigation';
 import { useState } from 'react';
+import { noticeRefusal } from '@/components/shell/session-ended';
 import { Button } from '@/components/ui/button';
 import { Dialog } from '@/components/ui/dialog';
 import { Field, TextArea } from '@/components/ui/field';
@@ -11,7 +12,7 @@ import { campaignCreateSchema, type CampaignCreate } from '@/lib/schemas/campaig
 import { splitTags } from '@/lib/tags';
 
 export type SaveCampaignResult =
-  { ok: true; id: string } | { ok: false; detail: string; errors: FieldError[] };
+  { ok: true; id: string } | { ok: false; code: string; detail: string; errors: FieldError[] };
 
 interface CampaignDialogProps {
   /** The button that opens it. */
@@ -58,6 +59,7 @@ export function CampaignDialog({
     try {
       const result = await save(checked.data);
       if (!result.ok) {
+        noticeRefusal(result.code);
         setProblem(result);
         return;
       }

@@ -1,3 +1,4 @@
+import { noticeRefusal } from '@/components/shell/session-ended';
 import type { FieldError } from '@/lib/errors';
 import type { ProblemView } from '@/lib/views/common';
 
@@ -55,6 +56,7 @@ export async function api<T>(path: string, request: ApiRequest = {}): Promise<T>
 async function refusal(response: Response): Promise<ApiError> {
   try {
     const problem = (await response.json()) as ProblemView;
+    noticeRefusal(problem.code);
     return new ApiError(response.status, problem.code, problem.detail, problem.errors, problem.requestId);
   } catch {
     return new ApiError(response.status, 'INTERNAL', `The server answered with status ${response.status}.`);

@@ -2,6 +2,7 @@
 
 import { useRouter } from 'next/navigation';
 import { useMemo, useState, type FormEvent, type ReactNode } from 'react';
+import { noticeRefusal } from '@/components/shell/session-ended';
 import { Button } from '@/components/ui/button';
 import { Checkbox } from '@/components/ui/choice';
 import { Field, TextArea } from '@/components/ui/field';
@@ -23,7 +24,8 @@ import { RunNotes } from './run-notes';
 
 /** What saving a run came to. */
 export type SaveRunResult =
-  { ok: true; revision: number; href?: string } | { ok: false; detail: string; errors: FieldError[] };
+  | { ok: true; revision: number; href?: string }
+  | { ok: false; code: string; detail: string; errors: FieldError[] };
 
 interface RunFormProps {
   /** What stands above the form: title and tabs. */
@@ -103,6 +105,7 @@ export function RunForm(props: RunFormProps) {
     try {
       const result = await props.save(checked.data, revision);
       if (!result.ok) {
+        noticeRefusal(result.code);
         setFromServer(result);
         return;
       }

@@ -7,7 +7,7 @@ import type { CampaignView } from '@/lib/views/campaign-view';
 import type { ListView } from '@/lib/views/common';
 import { models } from '..';
 import { getSequelize } from '../database';
-import { changeRow, type Change } from './change-row';
+import { changeRowOnRecord, type Change } from './change-row';
 import { containing, listPage, type ListSource } from './list-page';
 import { iso, itemOf, personJson, type ItemRow, type Made } from './person';
 import { selectRow } from './select';
@@ -102,7 +102,10 @@ export async function createCampaign(
   return getCampaign(labId, id);
 }
 
-export async function patchCampaign(change: Change, input: CampaignPatch): Promise<CampaignView> {
-  await changeRow('campaigns', change, input, () => getCampaign(change.labId, change.id));
+export async function patchCampaign(
+  change: Change & { userId: string },
+  input: CampaignPatch,
+): Promise<CampaignView> {
+  await changeRowOnRecord('campaigns', change, input, () => getCampaign(change.labId, change.id));
   return getCampaign(change.labId, change.id);
 }

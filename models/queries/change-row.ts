@@ -1,7 +1,9 @@
 import type { Transaction } from 'sequelize';
 import { LabError } from '@/lib/errors';
+import { getSequelize } from '../database';
 import { selectRow } from './select';
 import { StaleRevisionError } from './stale-revision';
+import { writeAudit } from './write-audit';
 
 /** A change of one row: which, by whom, and which revisions it starts from (null: any). */
 export interface Change {
@@ -26,6 +28,40 @@ export async function changeRow(
   current: () => Promise<{ revision: number }>,
   transaction?: Transaction,
 ): Promise<void> {
+  if (!(await writeIfCurrent(table, change, values, transaction))) {
+    throw new StaleRevisionError(await current());
+  }
+}
+
+/**
+ * The same with an entry in the audit trail that names the fields, both or neither.
+ * @throws StaleRevisionError
+ */
+export async function changeRowOnRecord(
+  table: 'campaigns' | 'runs',
+  change: Change & { userId: string },
+  values: Record<string, unknown>,
+  current: () => Promise<{ revision: number }>,
+): Promise<void> {
+  const kind = table === 'runs' ? 'run' : 'campaign';
+  const fields = Object.keys(values).filter((field) => values[field] !== undefined);
+  const { labId, userId, id: subjectId } = change;
+  const note = { labId, userId, action: `${kind}.changed`, subjectKind: kind, subjectId, detail: { fields } };
+  const written = await getSequelize().transaction(async (transaction) => {
+    const isCurrent = await writeIfCurrent(table, change, values, transaction);
+    if (isCurrent) await writeAudit(note, transaction);
+    return isCurrent;
+  });
+  // What is stored now is read on a connection of its own, once this one is free again.
+  if (!written) throw new StaleRevisionError(await current());
+}
+
+async function writeIfCurrent(
+  table: Table,
+  change: Change,
+  values: Record<string, unknown>,
+  transaction?: Transaction,
+): Promise<boolean> {
   const bind: unknown[] = [change.labId, change.id];
   const sets = Object.entries(values)
     .filter(([, value]) => value !== undefined)
@@ -37,7 +73,7 @@ export async function changeRow(
     bind,
     transaction,
   );
-  if (!row) throw new StaleRevisionError(await current());
+  return row !== null;
 }
 
 /**

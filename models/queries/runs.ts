@@ -12,7 +12,7 @@ import type { RunConditions } from '@/tracking/flow/run-conditions';
 import { models } from '..';
 import { getSequelize } from '../database';
 import type { Run } from '../run';
-import { changeRow, type Change } from './change-row';
+import { changeRowOnRecord, type Change } from './change-row';
 import { containing, listPage, type ListSource } from './list-page';
 import { iso, itemOf, personJson, type ItemRow, type Made } from './person';
 import { CONDITION_COLUMNS, conditionColumns, conditionsOf, type ConditionRow } from './run-columns';
@@ -133,11 +133,11 @@ export async function createRun(
 }
 
 /** @throws StaleRevisionError, LabError SUSPICIOUS */
-export async function patchRun(change: Change, input: RunPatch): Promise<RunView> {
+export async function patchRun(change: Change & { userId: string }, input: RunPatch): Promise<RunView> {
   const { name, startedAt, tags, notes, confirm, ...conditions } = input;
   assertLikely(conditions, confirm);
   const values = { name, started_at: startedAt, tags, notes, ...conditionColumns(conditions) };
-  await changeRow('runs', change, values, () => getRun(change.labId, change.id));
+  await changeRowOnRecord('runs', change, values, () => getRun(change.labId, change.id));
   return getRun(change.labId, change.id);
 }
 

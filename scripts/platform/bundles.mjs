@@ -10,6 +10,7 @@ import { hashSources } from './source-hash.mjs';
 const SOURCES = [
   'scripts/entries',
   'scripts/bench',
+  'scripts/endure',
   'tracking',
   'lib',
   'stacks',

@@ -16,13 +16,16 @@ const patchSchema = z.strictObject({ id: z.uuid(), revision: z.int(), campaign: 
 const patch = memberAction('edit-campaign', patchSchema, async ({ viewer, input }) => {
   const { createdBy } = await getCampaign(viewer.labId, input.id);
   assertMayTo(viewer, 'edit-campaign', [createdBy?.id ?? null]);
-  return patchCampaign({ labId: viewer.labId, id: input.id, ifMatch: [input.revision] }, input.campaign);
+  return patchCampaign(
+    { labId: viewer.labId, userId: viewer.userId, id: input.id, ifMatch: [input.revision] },
+    input.campaign,
+  );
 });
 
 const resultOf = (result: Awaited<ReturnType<typeof create>>): SaveCampaignResult =>
   result.ok
     ? { ok: true, id: result.data.id }
-    : { ok: false, detail: result.problem.detail, errors: result.problem.errors };
+    : { ok: false, code: result.problem.code, detail: result.problem.detail, errors: result.problem.errors };
 
 export async function addCampaign(campaign: CampaignCreate): Promise<SaveCampaignResult> {
   return resultOf(await create(campaign));

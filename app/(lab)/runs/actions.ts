@@ -19,11 +19,17 @@ const patchSchema = z.strictObject({ id: z.uuid(), revision: z.int(), run: runCr
 const patch = memberAction('edit-run', patchSchema, async ({ viewer, input }) => {
   const run = await getRun(viewer.labId, input.id);
   assertMayTo(viewer, 'edit-run', [run.createdBy?.id ?? null]);
-  return patchRun({ labId: viewer.labId, id: input.id, ifMatch: [input.revision] }, input.run);
+  return patchRun(
+    { labId: viewer.labId, userId: viewer.userId, id: input.id, ifMatch: [input.revision] },
+    input.run,
+  );
 });
 
 function resultOf(result: ActionResult<RunView>, hrefOf?: (run: RunView) => string): SaveRunResult {
-  if (!result.ok) return { ok: false, detail: result.problem.detail, errors: result.problem.errors };
+  if (!result.ok) {
+    const { code, detail, errors } = result.problem;
+    return { ok: false, code, detail, errors };
+  }
   return { ok: true, revision: result.data.revision, href: hrefOf?.(result.data) };
 }
 

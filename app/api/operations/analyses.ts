@@ -1,4 +1,5 @@
 import { assertMayTo, type Viewer } from '@/auth/viewer';
+import type { RequestKey } from '@/auth/idempotency';
 import { countRequest } from '@/auth/rate-limit';
 import { startAnalysis } from '@/jobs/start-analysis';
 import { stopAnalysis } from '@/jobs/stop-analysis';
@@ -56,8 +57,10 @@ export async function startAnalysisOf(
   viewer: Viewer,
   recordingId: string,
   { recipe, recipeId }: AnalysisInput,
+  key: RequestKey | null = null,
 ): Promise<AnalysisView> {
   const { labId, userId } = viewer;
+  if (key?.madeBefore) return getAnalysis(labId, key.madeBefore);
   const { recording, conditions } = await computableRecording(labId, recordingId);
   if (recipe && recipeId) {
     const errors = [{ path: 'recipeId', message: 'Send a recipe or the id of one, not both.' }];
@@ -69,6 +72,7 @@ export async function startAnalysisOf(
     const recipeRequest = saved?.fields ?? recipe ?? {};
     const request = { labId, recording, conditions, recipeRequest, recipeId: saved?.id ?? null, userId };
     const analysis = await startAnalysis(request, transaction);
+    await key?.remember(analysis.id, transaction);
     await writeAudit(
       { labId, userId, action: 'analysis.started', subjectKind: 'analysis', subjectId: analysis.id },
       transaction,

@@ -13,6 +13,9 @@ import type { Holder } from './upload-locks';
 /** Below this a failed write means a full disk, bytes. */
 const FULL_BYTES = 4e6;
 
+/** What a system says when a file can't grow: the disk is full, or the share of this user. */
+const FULL = /ENOSPC|EDQUOT|EFBIG/;
+
 /** Bytes of the body as its sender counts them; 0 where the count is not sent ahead. */
 export const announcedBytes = (headers: Headers): number => Number(headers.get('content-length') ?? 0);
 
@@ -80,8 +83,9 @@ const brokeOff = (arrived: number) =>
 async function explain(response: Response, row: UploadRow, arrived: number): Promise<never> {
   const headers = { 'Upload-Offset': String(arrived) };
   if (response.status === 413) throw largerThanAnnounced(row.bytes);
+  const said = (await response.text()).slice(0, 200);
   const disk = await statfs(uploadsFolder()).catch(() => null);
-  if (disk && disk.bavail * disk.bsize < FULL_BYTES) {
+  if (FULL.test(said) || (disk && disk.bavail * disk.bsize < FULL_BYTES)) {
     throw new LabError('STORAGE_FULL', 'Storage full. What has arrived is kept: go on when there is room.', {
       headers,
     });
@@ -91,7 +95,7 @@ async function explain(response: Response, row: UploadRow, arrived: number): Pro
     'The piece was cut off. Ask how much has arrived, and go on from there.',
     {
       headers,
-      cause: new Error(`tus answered ${response.status}: ${(await response.text()).slice(0, 200)}`),
+      cause: new Error(`tus answered ${response.status}: ${said}`),
     },
   );
 }

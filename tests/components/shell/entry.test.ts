@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { currentPlace } from '@/components/shell/places';
 import { safeDestination } from '@/components/sign-in/destination';
-import { signInProblem } from '@/components/sign-in/sign-in-form';
+import { signInProblem } from '@/components/sign-in/sign-in-by-password';
 import { themeCookie, themeFromCookie } from '@/lib/theme';
 
 describe('after signing in', () => {

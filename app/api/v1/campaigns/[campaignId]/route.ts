@@ -15,7 +15,7 @@ export const { GET, POST, PUT, PATCH, DELETE } = methods({
     const campaign = await getCampaign(viewer.labId, params.campaignId);
     assertMayTo(viewer, 'edit-campaign', [campaign.createdBy?.id ?? null]);
     assertNotDeleted(campaign, 'campaign');
-    return patchCampaign({ labId: viewer.labId, id: campaign.id, ifMatch }, body);
+    return patchCampaign({ labId: viewer.labId, userId: viewer.userId, id: campaign.id, ifMatch }, body);
   }),
   DELETE: memberRoute('DELETE /campaigns/{campaignId}', async ({ viewer, params }) => {
     await removeThing(viewer, 'campaign', params.campaignId);

@@ -17,7 +17,7 @@ export const { GET, POST, PUT, PATCH, DELETE } = methods({
   PATCH: memberRoute('PATCH /runs/{runId}', async ({ viewer, params, body, ifMatch }) => {
     assertMayTo(viewer, 'edit-run', await makersOfRun(viewer.labId, params.runId));
     assertNotDeleted(await getRun(viewer.labId, params.runId), 'run');
-    return patchRun({ labId: viewer.labId, id: params.runId, ifMatch }, body);
+    return patchRun({ labId: viewer.labId, userId: viewer.userId, id: params.runId, ifMatch }, body);
   }),
   DELETE: memberRoute('DELETE /runs/{runId}', async ({ viewer, params }) => {
     await removeThing(viewer, 'run', params.runId);

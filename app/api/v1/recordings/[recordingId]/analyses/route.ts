@@ -11,8 +11,8 @@ export const { GET, POST, PUT, PATCH, DELETE } = methods({
     await makersOfRecording(viewer.labId, params.recordingId);
     return listAnalyses(viewer.labId, { ...query, recording: params.recordingId });
   }),
-  POST: memberRoute('POST /recordings/{recordingId}/analyses', async ({ viewer, params, body }) => {
-    const analysis = await startAnalysisOf(viewer, params.recordingId, body);
+  POST: memberRoute('POST /recordings/{recordingId}/analyses', async ({ viewer, params, body, key }) => {
+    const analysis = await startAnalysisOf(viewer, params.recordingId, body, key);
     return created(analysis, `/api/v1/analyses/${analysis.id}`);
   }),
 });
