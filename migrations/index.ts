@@ -5,6 +5,7 @@ import * as addUploadMetadataAndQuota from './20261201122000-add-upload-metadata
 import * as addMotionMeasures from './20261201130000-add-motion-measures';
 import * as addMailAndFileChecks from './20261201140000-add-mail-and-file-checks';
 import * as addVerdicts from './20261201151000-add-verdicts';
+import * as addFlowDetails from './20261201153000-add-flow-details';
 import * as rememberWhatAKeyMade from './20261201155000-remember-what-a-key-made';
 
 export interface Migration {
@@ -22,5 +23,6 @@ export const migrations: Migration[] = [
   { name: '20261201130000-add-motion-measures', ...addMotionMeasures },
   { name: '20261201140000-add-mail-and-file-checks', ...addMailAndFileChecks },
   { name: '20261201151000-add-verdicts', ...addVerdicts },
+  { name: '20261201153000-add-flow-details', ...addFlowDetails },
   { name: '20261201155000-remember-what-a-key-made', ...rememberWhatAKeyMade },
 ];

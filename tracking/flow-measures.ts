@@ -1,6 +1,14 @@
+import type { Acceleration } from './details/accelerations';
+import type { ChannelProfiles } from './details/channel-profiles';
+import type { Comparison } from './details/compare-with-expected';
+import type { FeaturePoints } from './details/feature-points';
+import type { TangleShape } from './details/tangle-shape';
+import type { OverTime } from './details/tracers-over-time';
 import type { Dispersion } from './dispersion/dispersion';
 import type { Estimate } from './estimates/estimate';
 import type { ReconnectionCandidate } from './pairs/candidate';
+import type { StateChange } from './populations/changes-of-state';
+import type { TrackSegment } from './populations/pieces';
 import type { VelocityTail } from './tails/velocity-tails';
 import type { VelocityPdf } from './velocity-pdf-shape';
 
@@ -54,6 +62,21 @@ export interface MotionMeasures extends Dispersion {
   tails: VelocityTail[];
 }
 
+/** What else is measured: over time, across the channel, beside what is expected, per track. Plain JSON. */
+export interface FlowDetails {
+  accelerations: Acceleration[];
+  comparisons: Comparison[];
+  overTime: OverTime;
+  /** Null where the direction of the flow is not given. */
+  profiles: ChannelProfiles | null;
+  /** Null where tracers can't be told to share a line. */
+  shape: TangleShape | null;
+  features: FeaturePoints;
+  /** Captures and releases, and the stretches that they cut tracks into. */
+  changes: StateChange[];
+  segments: TrackSegment[];
+}
+
 export interface PairSummary {
   /** Pairs that came within the closest approach, with enough points and a parting: those that were tested. */
   tested: number;
@@ -75,6 +98,7 @@ export interface FlowMeasures {
   /** In order of their meeting, then y, then x. */
   candidates: ReconnectionCandidate[];
   estimates: Estimate[];
+  details: FlowDetails;
 }
 
 export interface ImageSize {
@@ -85,5 +109,8 @@ export interface ImageSize {
 
 export interface MeasureFlowOptions {
   /** Told the share done, 0 to 1, and what is being done. */
-  onProgress?: (share: number, stage: 'populations' | 'velocities' | 'pairs' | 'estimates') => void;
+  onProgress?: (
+    share: number,
+    stage: 'populations' | 'velocities' | 'pairs' | 'estimates' | 'details',
+  ) => void;
 }

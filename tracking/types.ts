@@ -143,4 +143,9 @@ export interface Conditions {
   /** Unit vector of the normal fluid in image axes. */
   flowDirection?: [number, number] | null;
   tracer?: Tracer | null;
+  /** Walls of the channel in the image: ends x0, y0, x1, y1 of each, px. */
+  wallsPx?: [number, number, number, number][] | null;
+  /** gamma of L^1/2 = gamma (v_ns - v_0), s/m^2, and v_0, m/s, where the laboratory knows its own. */
+  gamma_s_m2?: number | null;
+  v0_m_s?: number | null;
 }

@@ -14,16 +14,22 @@ import { PageTitle, Section } from '@/components/ui/sheet';
 import { StateWord } from '@/components/ui/state-bead';
 import { STATE_WORDS } from '@/lib/analysis-words';
 import { formatCount } from '@/lib/format/count';
-import type { AnalysisView, CandidateView, TrackRowView } from '@/lib/views/analysis-view';
+import type { AnalysisView, CandidateView, MeasuresView, TrackRowView } from '@/lib/views/analysis-view';
+import type { DetailsView } from '@/lib/views/details-view';
 import type { PairSummary } from '@/tracking/flow-measures';
+import { AnalysisSourceProvider } from './analysis-source';
 import { CandidatesSection } from './candidates-section';
+import { ComparisonSection } from './comparison-section';
 import { DownloadsSection } from './downloads-section';
 import { EstimatesSection } from './estimates-section';
 import { MotionSection } from './motion-section';
+import { OverTimeSection } from './over-time-section';
 import { PdfSection } from './pdf-section';
 import { PopulationSection } from './population-section';
+import { ProfilesSection } from './profiles-section';
 import { ProgressPanel } from './progress-panel';
 import { ProvenanceSection } from './provenance-section';
+import { ShapeSection } from './shape-section';
 import { TrackTable } from './track-table';
 
 interface AnalysisSheetProps {
@@ -34,6 +40,9 @@ interface AnalysisSheetProps {
   stopReason: string | null;
   downloadReason: string | null;
 }
+
+const TWO_COLUMNS =
+  'grid grid-cols-[minmax(0,1fr)] gap-x-9 gap-y-6 pt-[22px] aside:grid-cols-[minmax(0,1fr)_484px]';
 
 const LINKED = ['measure-flow', 'done'];
 
@@ -75,8 +84,18 @@ export function AnalysisSheet({
     </EmptyState>
   );
 
+  const { recipe } = analysis;
+  const source = {
+    recording: analysis.recordingName,
+    sha256: recording.sha256,
+    recipe: analysis.recipeName ?? 'unnamed recipe',
+    seed: String(recipe.seed ?? 'auto'),
+    draws: String(recipe.bootstrapDraws ?? 'auto'),
+    codeVersion: analysis.codeVersion,
+  };
+
   return (
-    <>
+    <AnalysisSourceProvider value={source}>
       <PageTitle
         state={<StateWord state={analysis.state}>{STATE_WORDS[analysis.state]}</StateWord>}
         aside={<span className="text-note">{conditions}</span>}
@@ -97,7 +116,14 @@ export function AnalysisSheet({
           />
           {done ? (
             <Answer query={measures} what="the estimates">
-              {(data) => (data ? <EstimatesSection estimates={data.estimates} /> : null)}
+              {(data) =>
+                data ? (
+                  <>
+                    <EstimatesSection estimates={data.estimates} />
+                    {data.details ? <ComparisonSection comparisons={data.details.comparisons} /> : null}
+                  </>
+                ) : null
+              }
             </Answer>
           ) : null}
         </div>
@@ -107,9 +133,18 @@ export function AnalysisSheet({
               {(data) =>
                 data ? (
                   <>
-                    <PopulationSection populations={data.populations} />
+                    <PopulationSection
+                      populations={data.populations}
+                      details={data.details}
+                      onShow={(track, frame) => show(frame, track, null)}
+                    />
                     <PdfSection pdfs={data.pdfs} />
-                    <MotionSection motion={data.motion} />
+                    <MotionSection
+                      motion={data.motion}
+                      accelerations={data.details?.accelerations ?? []}
+                      pdfs={data.pdfs}
+                      spacingM={spacingOf(data)}
+                    />
                   </>
                 ) : null
               }
@@ -124,6 +159,7 @@ export function AnalysisSheet({
           />
         </div>
       </div>
+      {done && measures.data?.details ? <DetailSections details={measures.data.details} /> : null}
       {done ? (
         <Answer query={candidates} what="the candidates">
           {(list) => (
@@ -137,7 +173,7 @@ export function AnalysisSheet({
           )}
         </Answer>
       ) : null}
-      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-9 gap-y-6 pt-[22px] aside:grid-cols-[minmax(0,1fr)_484px]">
+      <div className={TWO_COLUMNS}>
         <TrackTable
           analysisId={initial.id}
           tracks={analysis.summary?.tracks ?? null}
@@ -159,9 +195,30 @@ export function AnalysisSheet({
           )}
         </Section>
       </div>
-    </>
+    </AnalysisSourceProvider>
   );
 }
+
+/** The course over time beside the profiles across the channel, and the shape of the lines. */
+function DetailSections({ details }: { details: DetailsView }) {
+  const expected = details.comparisons.find(({ what }) => what === 'trapped along')?.expected ?? [];
+  return (
+    <div className={TWO_COLUMNS}>
+      <div className="min-w-0">
+        <OverTimeSection overTime={details.overTime} />
+        {details.shape ? <ShapeSection shape={details.shape} /> : null}
+      </div>
+      <div className="min-w-0">
+        <ProfilesSection profiles={details.profiles} expected={expected.filter(({ value }) => value !== 0)} />
+      </div>
+    </div>
+  );
+}
+
+/** The combined line spacing, m. */
+const spacingOf = ({ estimates }: MeasuresView) =>
+  estimates.find(({ quantity, method }) => quantity === 'line_spacing' && method === 'combined')?.value ??
+  null;
 
 function pairsOf(populations: Record<string, unknown> | undefined): PairSummary | null {
   const pairs = populations?.pairs;

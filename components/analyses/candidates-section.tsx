@@ -14,12 +14,18 @@ import type { CandidateView } from '@/lib/views/analysis-view';
 import type { PairSummary } from '@/tracking/flow-measures';
 import { CandidateDetail } from './candidate-detail';
 import { chanceText } from './candidate-words';
+import { SourceFold } from './source-fold';
 
 const ROWS = 12;
 const WHICH = [
   { value: 'accepted', label: 'accepted' },
-  { value: 'all', label: 'all' },
+  { value: 'both', label: 'seen before and after' },
+  { value: 'one', label: 'one side' },
 ] as const;
+type Which = (typeof WHICH)[number]['value'];
+
+/** A partner appears or vanishes with the meeting: only one side of it is seen. */
+const isOneSided = ({ before, after }: CandidateView) => before === null || after === null;
 
 interface CandidatesSectionProps {
   candidates: readonly CandidateView[];
@@ -32,9 +38,13 @@ interface CandidatesSectionProps {
 /** Pairs of tracks that meet and part, and what is known of the one that is chosen. */
 export function CandidatesSection({ candidates, pairs, chosen, onChoose, onShow }: CandidatesSectionProps) {
   const accepted = candidates.filter((candidate) => candidate.accepted);
-  const [which, setWhich] = useState<'accepted' | 'all'>(accepted.length > 0 ? 'accepted' : 'all');
+  const [which, setWhich] = useState<Which>(accepted.length > 0 ? 'accepted' : 'both');
   const [shown, setShown] = useState(ROWS);
-  const listed = which === 'accepted' ? accepted : candidates;
+  const listed = {
+    accepted,
+    both: candidates.filter((candidate) => !isOneSided(candidate)),
+    one: candidates.filter(isOneSided),
+  }[which];
   const current = candidates.find(({ event }) => event === chosen) ?? listed[0] ?? null;
   return (
     <Section
@@ -54,7 +64,9 @@ export function CandidatesSection({ candidates, pairs, chosen, onChoose, onShow 
         <div className="grid gap-x-9 gap-y-5 aside:grid-cols-[minmax(0,1fr)_484px]">
           <div className="min-w-0">
             {listed.length === 0 ? (
-              <EmptyState>No pair passes every criterion.</EmptyState>
+              <EmptyState>
+                {which === 'accepted' ? 'No pair passes every criterion.' : 'No pair is of this kind.'}
+              </EmptyState>
             ) : (
               <Table label="Reconnection candidates" density="dense">
                 <thead>
@@ -65,6 +77,7 @@ export function CandidatesSection({ candidates, pairs, chosen, onChoose, onShow 
                       <sub>0</sub>
                     </HeadCell>
                     <HeadCell narrow="hide">Tracks</HeadCell>
+                    <HeadCell narrow="hide">Seen</HeadCell>
                     <HeadCell numeric narrow="hide" unit="µm">
                       Closest
                     </HeadCell>
@@ -92,6 +105,17 @@ export function CandidatesSection({ candidates, pairs, chosen, onChoose, onShow 
                 {`Show ${Math.min(50, listed.length - shown)} more`}
               </Button>
             ) : null}
+            <SourceFold
+              method="Pairs that come within the closest approach are found in cells, never by comparing all pairs. Each is fitted by δ² = m₀² + A²κ|t − t₀| before and after (Paoletti, Fisher & Lathrop, Physica D 239, 1367 (2010)) and by a straight fly-by; the Bayesian criterion tells them apart. Chance from independent tracks laid over each other; false discovery rate after Benjamini & Hochberg 1995, for meetings seen on both sides and on one apart."
+              inputs={
+                pairs
+                  ? [
+                      { name: 'Tested', value: countOf(pairs.tested, 'pair') },
+                      { name: 'By chance', value: chanceSentence(pairs) },
+                    ]
+                  : []
+              }
+            />
           </div>
           {current ? <CandidateDetail candidate={current} onShow={onShow} /> : null}
         </div>
@@ -99,6 +123,9 @@ export function CandidatesSection({ candidates, pairs, chosen, onChoose, onShow 
     </Section>
   );
 }
+
+const chanceSentence = ({ expectedByChance, surrogates }: PairSummary) =>
+  `${expectedByChance === null ? 'no number of' : expectedByChance.toFixed(1)} approaches expected of independent tracks; ${countOf(surrogates, 'surrogate meeting')}`;
 
 interface CandidateRowProps {
   candidate: CandidateView;
@@ -116,6 +143,9 @@ function CandidateRow({ candidate, chosen, onChoose }: CandidateRowProps) {
       <Cell numeric>{t0_s.toFixed(3)}</Cell>
       <Cell narrow="hide" className="tabular-nums">
         {formatCount(trackA)} and {formatCount(trackB)}
+      </Cell>
+      <Cell narrow="hide">
+        {candidate.before === null ? 'after' : candidate.after === null ? 'before' : 'both sides'}
       </Cell>
       <Cell numeric narrow="hide">
         <Quantity value={minSeparation_m} siPerUnit={DISPLAY_UNITS.smallLength.siPerUnit} digits={3} />

@@ -7,6 +7,7 @@ import { EmptyState } from '@/components/ui/page-states';
 import { Section } from '@/components/ui/sheet';
 import type { MeasuresView } from '@/lib/views/analysis-view';
 import { agreementSentence, DENSITY_UNIT, estimateRows, SPACING_UNIT } from '@/lib/charts/estimate-rows';
+import { EstimateSources } from './estimate-sources';
 
 const QUANTITIES = [
   { value: 'line_density', label: 'density' },
@@ -36,6 +37,7 @@ export function EstimatesSection({ estimates }: { estimates: MeasuresView['estim
             rows={rows}
           />
           <p className="pt-2 text-note text-ink-2">{agreementSentence(rows)}</p>
+          <EstimateSources estimates={estimates.filter((one) => one.quantity === quantity)} />
         </>
       )}
     </Section>

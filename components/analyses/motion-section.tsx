@@ -5,6 +5,8 @@ import { CurvePlot } from '@/components/charts/curve-plot';
 import { Segment } from '@/components/ui/choice';
 import { EmptyState } from '@/components/ui/page-states';
 import { Section } from '@/components/ui/sheet';
+import type { MeasuresView } from '@/lib/views/analysis-view';
+import type { DetailsView } from '@/lib/views/details-view';
 import type { MotionView } from '@/lib/views/motion-view';
 import {
   logRanges,
@@ -14,19 +16,41 @@ import {
   spreadCurve,
   toldApart,
 } from '@/lib/charts/motion-curves';
+import { AccelerationTable } from './acceleration-table';
+import { SourceFold } from './source-fold';
 import { TailTable } from './tail-table';
 
 const ASPECTS = [
   { value: 'spread', label: 'spreading' },
   { value: 'memory', label: 'memory' },
   { value: 'tails', label: 'tails' },
+  { value: 'acceleration', label: 'acceleration' },
 ] as const;
 type Aspect = (typeof ASPECTS)[number]['value'];
 
+const METHODS: Record<Aspect, string> = {
+  spread:
+    'Mean squared displacement of measured positions, 2σ² per component taken off; exponent by a fit that allows for the open shutter; bands by resampling whole tracks. Superdiffusion of tracers on lines: Tang, Bao & Guo, PNAS (2021).',
+  memory:
+    'Lagrangian autocorrelation over tracks at least twice as long as the lag, unbiased divisor; neighbouring velocities share a position, which is corrected at lags 0 and 1.',
+  tails:
+    'Maximum likelihood with the start chosen by the Kolmogorov-Smirnov distance and likelihood ratios (Clauset, Shalizi & Newman, SIAM Rev. 51, 661 (2009); Vuong 1989); −3 near reconnections: Paoletti, Fisher, Sreenivasan & Lathrop, PRL 101, 154501 (2008); tails that end at the line spacing: Baggaley & Barenghi, arXiv:1110.5767.',
+  acceleration:
+    'Second differences of three measured positions at the lag; errors by the scatter between tracks.',
+};
+
 const LAG = { words: 'lag', unit: 'ms' };
 
+interface MotionSectionProps {
+  motion: MotionView | null;
+  accelerations: DetailsView['accelerations'];
+  pdfs: MeasuresView['pdfs'];
+  /** Combined line spacing, m; null where there is none. */
+  spacingM: number | null;
+}
+
 /** How tracers spread, how long they remember their velocity, and how the tails of velocities fall. */
-export function MotionSection({ motion }: { motion: MotionView | null }) {
+export function MotionSection({ motion, accelerations, pdfs, spacingM }: MotionSectionProps) {
   const [aspect, setAspect] = useState<Aspect>('spread');
   const [wanted, setWanted] = useState<string | null>(null);
   if (!motion) {
@@ -36,9 +60,12 @@ export function MotionSection({ motion }: { motion: MotionView | null }) {
       </Section>
     );
   }
-  const measured = { spread: motion.displacements, memory: motion.autocorrelations, tails: motion.tails }[
-    aspect
-  ];
+  const measured: readonly { component: string }[] = {
+    spread: motion.displacements,
+    memory: motion.autocorrelations,
+    tails: motion.tails,
+    acceleration: accelerations,
+  }[aspect];
   const components = motionComponents(measured);
   const component = components.find((name) => name === wanted) ?? components[0];
   const at = <T extends { component: string }>(list: readonly T[]) =>
@@ -66,7 +93,21 @@ export function MotionSection({ motion }: { motion: MotionView | null }) {
           {aspect === 'memory' ? (
             <Memory list={toldApart(at(motion.autocorrelations))} component={component} />
           ) : null}
-          {aspect === 'tails' ? <TailTable tails={toldApart(at(motion.tails))} /> : null}
+          {aspect === 'tails' ? (
+            <TailTable
+              tails={toldApart(at(motion.tails))}
+              spacingM={spacingM}
+              flatnessOf={({ population, component: of, lagFrames }) => {
+                const pdf = pdfs.find(
+                  (one) =>
+                    one.population === population && one.component === of && one.lagFrames === lagFrames,
+                );
+                return pdf?.excessKurtosis == null ? null : pdf.excessKurtosis + 3;
+              }}
+            />
+          ) : null}
+          {aspect === 'acceleration' ? <AccelerationTable list={toldApart(at(accelerations))} /> : null}
+          <SourceFold method={METHODS[aspect]} inputs={[]} />
         </>
       )}
     </Section>

@@ -6,6 +6,7 @@ import { Segment, SelectField } from '@/components/ui/choice';
 import { EmptyState } from '@/components/ui/page-states';
 import { Section } from '@/components/ui/sheet';
 import { countOf } from '@/lib/format/count';
+import { SourceFold } from './source-fold';
 import {
   componentsOf,
   lagsOf,
@@ -70,6 +71,13 @@ export function PdfSection({ pdfs }: { pdfs: readonly Pdf[] }) {
         label={pdfSentence(shown, component, lag.lagS)}
         noise_m_s={shown.find(({ noise_m_s }) => noise_m_s !== null)?.noise_m_s ?? null}
         fileName={`velocity-pdf-${component}-lag-${lag.lagFrames}`}
+      />
+      <SourceFold
+        method="Histogram with bins common to all populations, wider than the localization noise; the density integrates to 1; bands by resampling whole tracks, since velocities of one track depend on each other. The components along and across are turned by the run’s flow direction."
+        inputs={shown.map((one) => ({
+          name: one.population,
+          value: `${countOf(one.samples, 'velocity', 'velocities')} of ${countOf(one.tracks, 'track')}, flatness ${one.excessKurtosis === null ? 'not known' : (one.excessKurtosis + 3).toFixed(2)}`,
+        }))}
       />
     </Section>
   );

@@ -6,8 +6,16 @@ import type { MotionView } from '@/lib/views/motion-view';
 
 type Tail = MotionView['tails'][number];
 
+interface TailTableProps {
+  tails: readonly Tail[];
+  /** Flatness of the whole distribution, 3 for a Gaussian. */
+  flatnessOf: (tail: Tail) => number | null;
+  /** Line spacing that the path is compared with, m; null where there is none. */
+  spacingM: number | null;
+}
+
 /** Tails by lag: where they begin, how they fall, and what else would describe them as well. */
-export function TailTable({ tails }: { tails: readonly Tail[] }) {
+export function TailTable({ tails, flatnessOf, spacingM }: TailTableProps) {
   if (tails.length === 0) return <EmptyState>No track is longer than the shortest lag.</EmptyState>;
   return (
     <>
@@ -21,6 +29,12 @@ export function TailTable({ tails }: { tails: readonly Tail[] }) {
             <HeadCell numeric unit="µm">
               mean path
             </HeadCell>
+            {spacingM === null ? null : (
+              <HeadCell numeric>
+                path/<i>ℓ</i>
+              </HeadCell>
+            )}
+            <HeadCell numeric>flatness</HeadCell>
             <HeadCell numeric>exponent</HeadCell>
             <HeadCell numeric unit="mm/s" narrow="hide">
               from
@@ -39,6 +53,14 @@ export function TailTable({ tails }: { tails: readonly Tail[] }) {
               <Cell numeric>
                 <Quantity value={tail.meanPath_m} {...DISPLAY_UNITS.smallLength} unit="" />
               </Cell>
+              {spacingM === null ? null : (
+                <Cell numeric>
+                  <Quantity value={tail.meanPath_m / spacingM} digits={2} />
+                </Cell>
+              )}
+              <Cell numeric>
+                <Quantity value={flatnessOf(tail)} digits={2} />
+              </Cell>
               <Cell numeric>
                 <Quantity value={tail.exponent} low={tail.exponentLow} high={tail.exponentHigh} />
               </Cell>
@@ -54,6 +76,9 @@ export function TailTable({ tails }: { tails: readonly Tail[] }) {
         </tbody>
       </Table>
       <p className="pt-2 text-note text-ink-2">
+        {spacingM === null
+          ? 'Heavy tails are expected while the path within the lag is shorter than the line spacing. '
+          : 'Heavy tails are expected where the path within the lag is shorter than the line spacing ℓ (ratio below 1), and a flatness near 3 beyond it. '}
         A density that falls as the size to the power of minus the exponent, begun where it fits best and at
         least five noise widths out. The verdict compares it with the tails of a Gaussian and of a log-normal
         distribution. An exponent of 3 alone doesn’t prove reconnections: the field around a line gives it

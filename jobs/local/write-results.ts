@@ -18,7 +18,7 @@ export async function writeTables(
   conditions: Conditions,
 ): Promise<void> {
   await mkdir(dir, { recursive: true });
-  const rows = () => tableTracks(tracks, measures.tracks);
+  const rows = () => tableTracks(tracks, measures.tracks, measures.details.segments);
   await writePieces(join(dir, 'tracks.csv'), tracksCsv(rows(), conditions));
   await writePieces(join(dir, 'velocities.csv'), velocitiesCsv(rows(), recipe.lagsFrames, conditions));
   await writePieces(join(dir, 'velocity-pdf.csv'), velocityPdfCsv(measures.pdfs));

@@ -1,5 +1,6 @@
 import { LINE_END } from './csv-chunks';
-import type { TableScale, TableTrack } from './track-rows';
+import type { TrackSegment } from '@/tracking/populations/pieces';
+import { segmentsByTrack, type TableScale, type TableTrack } from './track-rows';
 import { trackCsvRows, TRACKS_COLUMNS } from './tracks-csv';
 import { velocityCsvRows, VELOCITIES_COLUMNS } from './velocities-csv';
 
@@ -21,6 +22,18 @@ async function* streamRows(
     }
   }
   if (piece !== '') yield piece;
+}
+
+/** Tracks that come one by one from a store, with the stretches in which they change their state. */
+export async function* withSegments(
+  tracks: AsyncIterable<TableTrack>,
+  segments: readonly TrackSegment[],
+): AsyncGenerator<TableTrack> {
+  const byTrack = segmentsByTrack(segments);
+  for await (const track of tracks) {
+    const own = byTrack.get(track.track);
+    yield own ? { ...track, segments: own } : track;
+  }
 }
 
 /** `tracks.csv` of tracks that come one by one from a store: the same bytes as `tracksCsv`. */

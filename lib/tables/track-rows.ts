@@ -1,3 +1,4 @@
+import type { TrackSegment } from '@/tracking/populations/pieces';
 import { trackSlice, type TrackSlice } from '@/tracking/track-slice';
 import { POPULATIONS, type Conditions, type Tracks } from '@/tracking/types';
 
@@ -10,18 +11,37 @@ export interface TableTrack extends TrackSlice {
   population: number | null;
   /** Probability of being trapped, NaN where unknown. */
   pTrapped: number;
+  /** Stretches in different states, where the tracer was caught or came off within the track. */
+  segments?: readonly TrackSegment[];
+}
+
+/** Population and probability of a track in one frame, as tables write them. */
+export function stateAt(track: TableTrack, frame: number): { population: string; pTrapped: number } {
+  const segment = track.segments?.find(({ fromFrame, toFrame }) => frame >= fromFrame && frame <= toFrame);
+  return segment ?? { population: populationText(track.population), pTrapped: track.pTrapped };
+}
+
+/** Stretches by track number. */
+export function segmentsByTrack(segments: readonly TrackSegment[]): Map<number, TrackSegment[]> {
+  const byTrack = new Map<number, TrackSegment[]>();
+  for (const segment of segments)
+    byTrack.set(segment.track, [...(byTrack.get(segment.track) ?? []), segment]);
+  return byTrack;
 }
 
 /** Goes through tracks in order of their numbers; nothing is copied. */
 export function* tableTracks(
   tracks: Tracks,
   populations: { population: Uint8Array; pTrapped: Float32Array } | null,
+  segments: readonly TrackSegment[] = [],
 ): Generator<TableTrack> {
+  const byTrack = segmentsByTrack(segments);
   for (let i = 0; i < tracks.count; i++) {
     yield {
       ...trackSlice(tracks, i),
       population: populations ? populations.population[i] : null,
       pTrapped: populations ? populations.pTrapped[i] : Number.NaN,
+      ...(byTrack.has(i) ? { segments: byTrack.get(i) } : {}),
     };
   }
 }

@@ -1,7 +1,7 @@
 import { POINT_BRIDGED } from '@/tracking/types';
 import { csvChunks } from './csv-chunks';
 import { decimals, significant } from './number-text';
-import { populationText, type TableScale, type TableTrack } from './track-rows';
+import { stateAt, type TableScale, type TableTrack } from './track-rows';
 
 export const TRACKS_COLUMNS = 'track,frame,t_s,x_px,y_px,x_m,y_m,sx_px,sy_px,brightness,population,p_trapped';
 
@@ -11,9 +11,8 @@ export const TRACKS_COLUMNS = 'track,frame,t_s,x_px,y_px,x_m,y_m,sx_px,sy_px,bri
  * of the pixels as written.
  */
 export function* trackCsvRows(track: TableTrack, scale: TableScale): Generator<string> {
-  const population = populationText(track.population);
-  const pTrapped = decimals(track.pTrapped, 4);
   for (let i = 0; i < track.frame.length; i++) {
+    const { population, pTrapped } = stateAt(track, track.frame[i]);
     const measured = (track.flags[i] & POINT_BRIDGED) === 0;
     const x = decimals(track.xPx[i], 4);
     const y = decimals(track.yPx[i], 4);
@@ -29,7 +28,7 @@ export function* trackCsvRows(track: TableTrack, scale: TableScale): Generator<s
       measured ? decimals(track.syPx[i], 4) : '',
       measured ? significant(track.brightness[i], 6) : '',
       population,
-      pTrapped,
+      decimals(pTrapped, 4),
     ].join(',');
   }
 }

@@ -1,20 +1,20 @@
 import { trackVelocities } from '@/tracking/velocities';
 import { csvChunks } from './csv-chunks';
 import { significant } from './number-text';
-import { populationText, type TableScale, type TableTrack } from './track-rows';
+import { stateAt, type TableScale, type TableTrack } from './track-rows';
 
 export const VELOCITIES_COLUMNS = 'track,frame,t_s,lag_frames,vx_m_s,vy_m_s,svx_m_s,svy_m_s,population';
 
 /**
  * Rows of `velocities.csv` for one track, lag by lag. `frame` and `t_s` are the start of the
- * interval whose mean velocity the row gives; it ends `lag_frames` later. Both ends are measured.
+ * interval whose mean velocity the row gives; it ends `lag_frames` later. Both ends are measured. The
+ * population is that of the start.
  */
 export function* velocityCsvRows(
   track: TableTrack,
   lagsFrames: readonly number[],
   scale: TableScale,
 ): Generator<string> {
-  const population = populationText(track.population);
   for (const lagFrames of lagsFrames) {
     const v = trackVelocities(track, lagFrames, scale);
     for (let i = 0; i < v.frame.length; i++) {
@@ -27,7 +27,7 @@ export function* velocityCsvRows(
         significant(v.vyMS[i], 7),
         significant(v.svxMS[i], 5),
         significant(v.svyMS[i], 5),
-        population,
+        stateAt(track, v.frame[i]).population,
       ].join(',');
     }
   }

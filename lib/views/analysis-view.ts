@@ -3,6 +3,7 @@ import { REVIEW_STATES, VERDICTS } from '../review/verdict-words';
 import { recipeRequestSchema } from '../schemas/recipe';
 import { ANALYSIS_STAGES } from '../analysis-facts';
 import { itemFields, personSchema } from './common';
+import { detailsViewSchema } from './details-view';
 import { motionViewSchema } from './motion-view';
 
 const count = z.int();
@@ -155,6 +156,8 @@ export const measuresViewSchema = z.object({
       standardDeviation_m_s: numberOrNull,
       /** Standard deviation that localization alone would give. */
       noise_m_s: numberOrNull,
+      /** Flatness less 3, localization noise included. */
+      excessKurtosis: numberOrNull,
     }),
   ),
   estimates: z.array(
@@ -175,6 +178,7 @@ export const measuresViewSchema = z.object({
   ),
   /** Null for an analysis that was measured before there was such a measure. */
   motion: motionViewSchema.nullable(),
+  details: detailsViewSchema.nullable(),
   spotsPerFrame: z.array(count),
 });
 export type MeasuresView = z.infer<typeof measuresViewSchema>;

@@ -3,7 +3,13 @@ import type { AnalysisSummary, CandidateFacts, ImageFacts } from '@/lib/analysis
 import { newId } from '@/lib/ids';
 import type { ReconnectionRow, VerdictText } from '@/lib/tables/reconnections-csv';
 import type { Estimate } from '@/tracking/estimates/estimate';
-import type { FlowMeasures, MotionMeasures, PairSummary, PopulationSummary } from '@/tracking/flow-measures';
+import type {
+  FlowDetails,
+  FlowMeasures,
+  MotionMeasures,
+  PairSummary,
+  PopulationSummary,
+} from '@/tracking/flow-measures';
 import type { Conditions, Recipe, RecipeRequest } from '@/tracking/types';
 import type { VelocityPdf } from '@/tracking/velocity-pdf-shape';
 import { getSequelize } from '../database';
@@ -60,8 +66,8 @@ export async function saveMeasures(
   const sequelize = getSequelize();
   const populations = JSON.stringify({ ...measures.populations, pairs: measures.pairs });
   await sequelize.query(
-    `INSERT INTO analysis_measures (analysis_id, tracks_revision, populations, pdfs, estimates, motion)
-     VALUES ($1, $2, $3, $4, $5, $6)`,
+    `INSERT INTO analysis_measures (analysis_id, tracks_revision, populations, pdfs, estimates, motion, details)
+     VALUES ($1, $2, $3, $4, $5, $6, $7)`,
     {
       bind: [
         analysisId,
@@ -70,6 +76,7 @@ export async function saveMeasures(
         JSON.stringify(measures.pdfs),
         JSON.stringify(measures.estimates),
         JSON.stringify(measures.motion),
+        JSON.stringify(measures.details),
       ],
       transaction,
     },
@@ -132,6 +139,7 @@ export interface StoredMeasures {
   estimates: Estimate[];
   /** Null where the analysis is older than this measure. */
   motion: MotionMeasures | null;
+  details: FlowDetails | null;
 }
 
 /** What was measured of an analysis, the newest revision of the tracks unless one is named; null where nothing was. */
@@ -145,7 +153,7 @@ export async function readMeasures(
   };
   const rows = await getSequelize().query<Row>(
     `SELECT m.tracks_revision AS "tracksRevision", m.computed_at AS "computedAt", m.populations, m.pdfs, m.estimates,
-       m.motion
+       m.motion, m.details
      FROM analysis_measures m JOIN analyses a ON a.id = m.analysis_id
      WHERE a.lab_id = $1 AND m.analysis_id = $2 AND ($3::int IS NULL OR m.tracks_revision = $3)
      ORDER BY m.tracks_revision DESC LIMIT 1`,

@@ -2,6 +2,7 @@ import { LabError, notFound } from '@/lib/errors';
 import type { MeasuresView } from '@/lib/views/analysis-view';
 import type { VelocityPdf } from '@/tracking/velocity-pdf-shape';
 import { readMeasures, type StoredMeasures } from './analysis-outcome';
+import { detailsView } from './details-view';
 import { motionView } from './motion-view';
 import { selectRow } from './select';
 
@@ -61,6 +62,7 @@ export async function measuresView(labId: string, analysisId: string): Promise<M
     pdfs: measures.pdfs.map(pdfView),
     estimates: measures.estimates,
     motion: measures.motion && motionView(measures.motion),
+    details: measures.details && detailsView(measures.details),
     spotsPerFrame: counts?.spots ?? [],
   };
 }
@@ -83,5 +85,6 @@ function pdfView(pdf: VelocityPdf): MeasuresView['pdfs'][number] {
     mean_m_s: pdf.meanMS,
     standardDeviation_m_s: root(pdf.varianceM2S2),
     noise_m_s: root(pdf.noiseVarianceM2S2),
+    excessKurtosis: pdf.excessKurtosis,
   };
 }

@@ -25,5 +25,8 @@ export function conditionsOfRun(run: Run): Conditions | null {
     heatFlux_W_m2: heatFluxWM2,
     flowDirection: run.flowDirection,
     tracer: run.tracer,
+    // Only where they were stated: most runs have neither walls nor a calibration of their own.
+    ...(run.channel?.wallsPx?.length ? { wallsPx: run.channel.wallsPx } : {}),
+    ...(run.gammaSM2 === null ? {} : { gamma_s_m2: run.gammaSM2, v0_m_s: run.v0MS }),
   };
 }

@@ -1,3 +1,5 @@
+import type { StateChange } from '../populations/changes-of-state';
+import type { Pieces } from '../populations/pieces';
 import type { Conditions, Recipe, Tracks } from '../types';
 import { beadsPerLength } from './beads-per-length';
 import { combine } from './combine';
@@ -6,6 +8,7 @@ import { withoutTracers, type EstimateContext } from './context';
 import type { Estimate, EstimateMethod } from './estimate';
 import { decayEstimate } from './decay';
 import { findFellows } from './fellows';
+import { freeFlights, freePathEstimate } from './free-path';
 import { heatFluxPrior } from './heat-flux-prior';
 import { asEstimates, notUsable, type DensityResult } from './interval';
 import { lineGroups } from './line-groups';
@@ -29,6 +32,8 @@ export interface LineDensityEstimates {
   estimates: Estimate[];
   /** Number of the line of a trapped track, -1 for others. */
   line: Int32Array;
+  /** What the methods share; null where there are too few trapped tracers for any. */
+  context: EstimateContext | null;
 }
 
 /**
@@ -36,6 +41,7 @@ export interface LineDensityEstimates {
  * reason why it can't be used, and combined.
  *
  * @param populationNote why tracks have the names they have.
+ * @param captures pieces of tracks and where they change their state; null where the populations were not told apart.
  */
 export function lineDensityEstimates(
   tracks: Tracks,
@@ -44,20 +50,23 @@ export function lineDensityEstimates(
   image: { width: number; height: number; frames: number },
   conditions: Conditions,
   recipe: Recipe,
+  captures: { pieces: Pieces; changes: readonly StateChange[] } | null = null,
 ): LineDensityEstimates {
   const pool = trappedPool(tracks, population, image, conditions);
   const groups = lineGroups(tracks, pool, image);
   const refusal = withoutTracers(pool, populationNote);
-  const results: DensityResult[] = refusal
-    ? BY_TRACERS.map(([method]) => notUsable(method, refusal))
-    : measured();
-  results.push(notUsable('free-path', 'No capture of a free tracer is told from its track.'));
+  const context = refusal ? null : shared();
+  const results: DensityResult[] = BY_TRACERS.map(([method, estimate]) =>
+    context ? estimate(context) : notUsable(method, refusal ?? ''),
+  );
+  const flights = captures && freeFlights(captures.pieces, captures.changes, conditions, pool.driftPx);
+  results.push(freePathEstimate(flights, conditions));
   results.push(notUsable('marked-chains', 'No chain of tracers was marked by a person.'));
   results.push(heatFluxPrior(conditions));
   results.push(combine(results));
-  return { estimates: results.flatMap(asEstimates), line: groups.line };
+  return { estimates: results.flatMap(asEstimates), line: groups.line, context };
 
-  function measured(): DensityResult[] {
+  function shared(): EstimateContext {
     const h = conditions.sheetThickness_m;
     const tracersByLine = new Float64Array(groups.lines);
     for (let i = 0; i < tracks.count; i++) {
@@ -66,7 +75,6 @@ export function lineDensityEstimates(
     }
     const fellows = h ? findFellows(pool, groups, image, conditions, h, recipe.spotSizePx) : null;
     const nearest = nearestLines(tracks, pool, groups, image, conditions.pixelSize_m);
-    const context = { tracks, image, conditions, recipe, pool, groups, fellows, nearest, tracersByLine };
-    return BY_TRACERS.map(([, estimate]) => estimate(context));
+    return { tracks, image, conditions, recipe, pool, groups, fellows, nearest, tracersByLine };
   }
 }

@@ -13,10 +13,10 @@ import { resampleLines } from './resample-lines';
 /** Velocities beyond this many widths are left out: they belong to reconnections. */
 const TRIM = 2.5;
 /** Variance of a Gaussian cut there over its whole variance. */
-const TRIMMED_VARIANCE = 0.9112;
+export const TRIMMED_VARIANCE = 0.9112;
 const TRIM_ROUNDS = 20;
 /** Above this part of the variance noise spoils the result, below the other it hardly matters. */
-const NOISE_PART_MAX = 0.5;
+export const NOISE_PART_MAX = 0.5;
 const NOISE_PART_GOOD = 0.1;
 
 /**
@@ -27,13 +27,7 @@ const NOISE_PART_GOOD = 0.1;
 export function lineVelocityEstimate(context: EstimateContext): DensityResult {
   const method = 'line-velocity';
   const { recipe, groups } = context;
-  const lags = [...recipe.lagsFrames].sort((a, b) => a - b);
-  let best: ReturnType<typeof trimmedVariance> = null;
-  for (const lag of lags) {
-    const now = trimmedVariance(context, lag);
-    if (now && (!best || now.noise / now.variance < best.noise / best.variance)) best = now;
-    if (best && best.noise / best.variance <= NOISE_PART_GOOD) break;
-  }
+  const best = transverseMotion(context);
   if (!best)
     return notUsable(
       method,
@@ -52,8 +46,7 @@ export function lineVelocityEstimate(context: EstimateContext): DensityResult {
       inputs,
     );
   }
-  const density = (variance: number): number =>
-    spacingFromLineVelocity(Math.sqrt(3 * Math.max(0, variance)), LINE_VELOCITY_FACTOR) ** -2;
+  const density = densityFromTransverse;
   const { squareByLine, countByLine, noise } = best;
   const random = createRandom(mixSeed(recipe.seed, 43));
   const draws = resampleLines(
@@ -74,7 +67,37 @@ export function lineVelocityEstimate(context: EstimateContext): DensityResult {
   };
 }
 
-function trimmedVariance(context: EstimateContext, lagFrames: number) {
+/** L from the variance of one component of the velocity of lines, (m/s)^2; NaN unless it is > 0. */
+export function densityFromTransverse(variance: number): number {
+  return spacingFromLineVelocity(Math.sqrt(3 * Math.max(0, variance)), LINE_VELOCITY_FACTOR) ** -2;
+}
+
+/** Motion across the flow at the shortest lag that keeps noise small; null where nothing can be measured. */
+export function transverseMotion(context: EstimateContext): TransverseMotion | null {
+  const lags = [...context.recipe.lagsFrames].sort((a, b) => a - b);
+  let best: TransverseMotion | null = null;
+  for (const lag of lags) {
+    const now = trimmedVariance(context, lag);
+    if (now && (!best || now.noise / now.variance < best.noise / best.variance)) best = now;
+    if (best && best.noise / best.variance <= NOISE_PART_GOOD) break;
+  }
+  return best;
+}
+
+/** Trimmed velocities of trapped tracks across the flow. */
+export interface TransverseMotion {
+  lagFrames: number;
+  meanMS: number;
+  /** Velocities further from the mean than this are left out, m/s. */
+  limitMS: number;
+  /** As of a Gaussian that was not trimmed, and the part of it that localization explains, (m/s)^2. */
+  variance: number;
+  noise: number;
+  squareByLine: Float64Array;
+  countByLine: Float64Array;
+}
+
+function trimmedVariance(context: EstimateContext, lagFrames: number): TransverseMotion | null {
   const { tracks, pool, groups, conditions } = context;
   const flow = unitFlow(conditions);
   const values: number[] = [];
@@ -119,5 +142,5 @@ function trimmedVariance(context: EstimateContext, lagFrames: number) {
     squareByLine[line[i]] += (v - mean) ** 2;
     countByLine[line[i]]++;
   });
-  return { lagFrames, variance, noise, squareByLine, countByLine };
+  return { lagFrames, meanMS: mean, limitMS: limit, variance, noise, squareByLine, countByLine };
 }

@@ -1,4 +1,4 @@
-import { TRAPPED, UNDECIDED } from '../populations/populations';
+import { TRAPPED, UNDECIDED } from '../populations/codes';
 import { POINT_BRIDGED, type Conditions, type Tracks } from '../types';
 
 /** Trapped tracks and what they have in common. */

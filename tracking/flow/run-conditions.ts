@@ -8,6 +8,8 @@ export interface Channel {
   width_m?: number | null;
   depth_m?: number | null;
   length_m?: number | null;
+  /** Its walls in the image: ends x0, y0, x1, y1 of each, px. */
+  wallsPx?: [number, number, number, number][] | null;
 }
 
 /** What a run says about itself; anything may still be missing while a form is filled in. */
@@ -22,9 +24,6 @@ export interface RunConditions extends Omit<Conditions, 'pixelSize_m' | 'frameIn
   gravityDirection?: [number, number] | null;
   /** Tracers seen per area of the sheet, m^-2, when known or planned. */
   tracersPerArea_m2?: number | null;
-  /** gamma of L^1/2 = gamma (v_ns - v_0), s/m^2, and v_0, m/s, when the laboratory knows its own. */
-  gamma_s_m2?: number | null;
-  v0_m_s?: number | null;
 }
 
 /** Cross-section of the channel, m^2; null while its sizes are unknown. */

@@ -8,6 +8,9 @@ export const GAMMA_TABLE = { temperatureK: [1.3, 1.6, 1.9], gammaSM2: [53.5e4, 1
 /** Relative standard error of gamma (30 %), so that ln L has 0.6. */
 export const GAMMA_RELATIVE_ERROR = 0.3;
 
+/** The same of a gamma that a laboratory states for its own channel (common practice, no source). */
+export const OWN_GAMMA_RELATIVE_ERROR = 0.1;
+
 /** gamma at a temperature, s/m^2, linear between the table's points; NaN outside 1.3 to 1.9 K. */
 export function gammaAt(temperatureK: number): number {
   const { temperatureK: t, gammaSM2: g } = GAMMA_TABLE;

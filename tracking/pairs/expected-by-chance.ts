@@ -1,4 +1,4 @@
-import { TRAPPED } from '../populations/populations';
+import { TRAPPED } from '../populations/codes';
 import { trackSlice } from '../track-slice';
 import type { Conditions, Tracks } from '../types';
 import { trackVelocities } from '../velocities';

@@ -1,5 +1,5 @@
 import type { PairSummary } from '../flow-measures';
-import { FREE, TRAPPED } from '../populations/populations';
+import { FREE, TRAPPED } from '../populations/codes';
 import { createRandom, mixSeed } from '../random';
 import type { Conditions, Recipe, Tracks } from '../types';
 import type { ReconnectionCandidate } from './candidate';
@@ -9,7 +9,7 @@ import { falseDiscoveryQ } from './false-discovery';
 import { meetingScore, REDUCED_CHI2_MAX } from './judge-meeting';
 import { expectedByChance } from './expected-by-chance';
 import { fitMeeting } from './meeting-fit';
-import { meetsAndParts, separationAround, SIDE_POINTS_MIN } from './separation';
+import { meetsAndParts, seenSide, separationAround, SIDE_POINTS_MIN, type SeenSide } from './separation';
 import { chanceMeetings, chanceOf, pairKey } from './surrogates';
 
 export interface FoundCandidates {
@@ -21,6 +21,7 @@ export interface FoundCandidates {
  * Pairs of trapped tracks that meet within `recipe.closestApproach_m` and part. Each is fitted by
  * the square-root law of reconnection and by a straight fly-by; its chance comes from independent
  * tracks laid over each other, and the false discovery rate from all pairs that were tested.
+ * Meetings of which one side is seen, since a partner appears or vanishes with them, are judged apart.
  * Undecided tracks are looked at too, but a pair with one is never accepted. Listed are the pairs
  * that the law describes within its errors and better than a fly-by.
  */
@@ -40,7 +41,8 @@ export function findCandidates(
     const separation = separationAround(tracks, meeting.trackA, meeting.trackB, meeting.frame, pixelM);
     if (!meetsAndParts(separation)) return [];
     const fit = fitMeeting(separation, dtS, REDUCED_CHI2_MAX);
-    return [{ meeting, separation, fit, score: meetingScore(separation, fit) }];
+    const seen: SeenSide = seenSide(separation) ?? 'both';
+    return [{ meeting, separation, seen, fit, score: meetingScore(separation, fit) }];
   });
   const expected = expectedByChance(tracks, population, image, conditions, recipe.closestApproach_m);
   if (tested.length === 0) {
@@ -62,8 +64,13 @@ export function findCandidates(
     met,
     tested.length,
   );
-  const pChance = tested.map(({ score }) => chanceOf(score, chance));
-  const qValue = falseDiscoveryQ(pChance);
+  const pChance = tested.map(({ score, seen }) => chanceOf(score, seen, chance));
+  // Meetings that are seen on one side tell less, so they are held against their like alone.
+  const qValue = new Array<number>(tested.length).fill(1);
+  for (const side of ['both', 'before', 'after'] satisfies SeenSide[]) {
+    const own = tested.flatMap(({ seen }, i) => (seen === side ? [i] : []));
+    falseDiscoveryQ(own.map((i) => pChance[i])).forEach((q, k) => (qValue[own[k]] = q));
+  }
   const candidates = tested
     .map((one, i) => ({ ...one, pChance: pChance[i], qValue: qValue[i] }))
     .flatMap(({ meeting, separation, fit, ...chances }) => {

@@ -1,7 +1,7 @@
 import type { SideFit } from './candidate';
 import { freeExponent } from './free-exponent';
 import type { MeetingFit } from './meeting-fit';
-import { isAfterOnly, type Separation } from './separation';
+import { seenSide, type Separation } from './separation';
 
 /** Bounds of the amplitude of the law, wider than all published values. */
 export const AMPLITUDE = { low: 0.2, high: 6 } as const;
@@ -10,10 +10,11 @@ export const REDUCED_CHI2_MAX = 2;
 export const BIC_GAIN_MIN = 10;
 
 /** Amplitudes before and after; null for a side that was not seen. */
-function amplitudes(s: Separation, fit: MeetingFit): { before: number | null; after: number } {
+function amplitudes(s: Separation, fit: MeetingFit): { before: number | null; after: number | null } {
+  const seen = seenSide(s);
   return {
-    before: isAfterOnly(s) ? null : Math.sqrt(fit.law.coefficients[2]),
-    after: Math.sqrt(fit.law.coefficients[1]),
+    before: seen === 'after' ? null : Math.sqrt(fit.law.coefficients[2]),
+    after: seen === 'before' ? null : Math.sqrt(fit.law.coefficients[1]),
   };
 }
 
@@ -28,8 +29,12 @@ const Z95 = 1.96;
 const EXPONENT_SYSTEMATIC = 0.05;
 
 /** Fits of both sides; null for a side that was not seen. */
-export function sidesOf(s: Separation, fit: MeetingFit): { before: SideFit | null; after: SideFit } {
-  return { before: isAfterOnly(s) ? null : sideFit(s, fit, -1), after: sideFit(s, fit, 1) };
+export function sidesOf(s: Separation, fit: MeetingFit): { before: SideFit | null; after: SideFit | null } {
+  const seen = seenSide(s);
+  return {
+    before: seen === 'after' ? null : sideFit(s, fit, -1),
+    after: seen === 'before' ? null : sideFit(s, fit, 1),
+  };
 }
 
 function sideFit(s: Separation, fit: MeetingFit, side: -1 | 1): SideFit {
@@ -61,7 +66,7 @@ export function failedByLaw(s: Separation, fit: MeetingFit): string[] {
 }
 
 /** Sides whose exponent is measured and not 1/2. */
-export function failedByExponent(sides: { before: SideFit | null; after: SideFit }): string[] {
+export function failedByExponent(sides: { before: SideFit | null; after: SideFit | null }): string[] {
   const isOff = (side: SideFit | null) =>
     side !== null &&
     side.points >= EXPONENT_GATE_POINTS &&

@@ -1,5 +1,5 @@
 import { KAPPA_M2_S } from '../units';
-import { isAfterOnly, type Separation } from './separation';
+import { reversed, seenSide, type Separation } from './separation';
 import { ModelFitter, type Basis, type TimedFit } from './timed-fit';
 
 const KAPPA_UM2_S = KAPPA_M2_S * 1e12;
@@ -25,14 +25,19 @@ export interface MeetingFit {
 
 /**
  * Compares two lines that reconnect (square-root law) with two tracers that fly past each other,
- * the time of meeting by search.
+ * the time of meeting by search. A meeting that is seen before it only is fitted with time reversed.
  *
  * @param frameIntervalS s.
  * @param hopeless reduced chi-square of the law with offset above which nothing more is fitted.
  * @returns null where the law is hopeless.
  */
 export function fitMeeting(s: Separation, frameIntervalS: number, hopeless = Infinity): MeetingFit | null {
-  const afterOnly = isAfterOnly(s);
+  const seen = seenSide(s);
+  if (seen === 'before') {
+    const fit = fitMeeting(reversed(s), frameIntervalS, hopeless);
+    return fit && backwards(fit);
+  }
+  const afterOnly = seen !== 'both';
   const kappaPerFrame = KAPPA_UM2_S * frameIntervalS;
   // Columns: offset, after, before. Points before an unseen meeting do not exist.
   const rootLaw: Basis = (since, t0, row) => {
@@ -68,5 +73,26 @@ export function fitMeeting(s: Separation, frameIntervalS: number, hopeless = Inf
     reducedChi2: law.chi2 / Math.max(1, s.n - parameters),
     bicGain: flyBy.minusTwoLnL + 3 * lnN - Math.min(bicOffset, bicPlain),
     t0Curvature: (near(law.t0 + h) - 2 * law.minusTwoLnL + near(law.t0 - h)) / (h * h),
+  };
+}
+
+/** The fit of a meeting whose time was reversed: what came after comes before. */
+function backwards(fit: MeetingFit): MeetingFit {
+  const turned = (one: TimedFit): TimedFit => ({
+    ...one,
+    t0: -one.t0,
+    modelUm2: one.modelUm2.slice().reverse(),
+  });
+  const law = turned(fit.law);
+  const [offset, after] = law.coefficients;
+  const [offsetError, afterError] = law.errors;
+  return {
+    ...fit,
+    law: {
+      ...law,
+      coefficients: Float64Array.of(offset, 0, after),
+      errors: Float64Array.of(offsetError, 0, afterError),
+    },
+    flyBy: turned(fit.flyBy),
   };
 }

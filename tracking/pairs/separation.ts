@@ -93,21 +93,41 @@ export function separationAround(
   };
 }
 
-/** Fewest points on each side, and after the meeting where nothing was seen before it. */
+/** Fewest points on each side, and on the one side where nothing is seen on the other. */
 export const SIDE_POINTS_MIN = 5;
-export const AFTER_ONLY_POINTS_MIN = 8;
+export const ONE_SIDE_POINTS_MIN = 8;
 
-export function isAfterOnly(s: Separation): boolean {
-  return s.before < SIDE_POINTS_MIN;
+/** What is seen of a meeting: a partner may appear with it, or vanish with it. */
+export type SeenSide = 'both' | 'before' | 'after';
+
+/** The sides that have points enough to count; null where neither has. */
+export function seenSide(s: Separation): SeenSide | null {
+  if (s.before >= SIDE_POINTS_MIN && s.after >= SIDE_POINTS_MIN) return 'both';
+  if (s.after >= ONE_SIDE_POINTS_MIN) return 'after';
+  return s.before >= ONE_SIDE_POINTS_MIN ? 'before' : null;
+}
+
+/** The same meeting with time running backwards. */
+export function reversed(s: Separation): Separation {
+  return {
+    ...s,
+    frame: s.frame.slice().reverse(),
+    since: s.since.map((since) => -since).reverse(),
+    squareUm2: s.squareUm2.slice().reverse(),
+    noiseUm2: s.noiseUm2.slice().reverse(),
+    before: s.after,
+    after: s.before,
+  };
 }
 
 /**
- * True where two tracks meet and part: enough points, and on every side that counts the far third
- * lies clearly beyond the nearest points. Tracers of one line, which keep their distance, do not.
+ * True where two tracks meet and part, or do what can be seen of it: enough points, and on every side
+ * that counts the far third lies clearly beyond the nearest points. Tracers of one line, which keep their
+ * distance, do not.
  */
 export function meetsAndParts(s: Separation): boolean {
-  const afterOnly = isAfterOnly(s);
-  if (s.after < (afterOnly ? AFTER_ONLY_POINTS_MIN : SIDE_POINTS_MIN)) return false;
+  const seen = seenSide(s);
+  if (seen === null) return false;
   let least = Infinity;
   let noise = 0;
   for (let i = 0; i < s.n; i++) {
@@ -118,8 +138,8 @@ export function meetsAndParts(s: Separation): boolean {
   const clear = Math.max(2 * least, least + 5 * Math.sqrt(4 * noise * least + 4 * noise * noise));
   const thirdBefore = Math.ceil(s.before / 3);
   const thirdAfter = Math.ceil(s.after / 3);
-  if (mean(s.squareUm2.subarray(s.n - thirdAfter)) <= clear) return false;
-  return afterOnly || mean(s.squareUm2.subarray(0, thirdBefore)) > clear;
+  if (seen !== 'before' && mean(s.squareUm2.subarray(s.n - thirdAfter)) <= clear) return false;
+  return seen === 'after' || mean(s.squareUm2.subarray(0, thirdBefore)) > clear;
 }
 
 function mean(values: Float64Array): number {

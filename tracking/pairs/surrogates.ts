@@ -3,19 +3,18 @@ import type { Tracks } from '../types';
 import { pointsByFrame } from './close-pairs';
 import { fitMeeting } from './meeting-fit';
 import { meetingScore, REDUCED_CHI2_MAX } from './judge-meeting';
-import { meetsAndParts, separationAround } from './separation';
+import { meetsAndParts, seenSide, separationAround, type SeenSide } from './separation';
 
 /** Meetings of independent tracks to collect for every one tested, within bounds, and tries for each. */
 const PER_TESTED = 3;
 const WANTED = { least: 1000, most: 6000 } as const;
 const TRIES_PER_WANTED = 30;
 
-/** Scores of chance meetings with the weight of each. */
+/** Scores of chance meetings with the weight of each, and what is seen of them. */
 export interface ChanceMeetings {
   score: Float64Array;
   weight: Float64Array;
-  /** Number of equally weighted meetings that carry as much information (Kish 1965). */
-  effective: number;
+  seen: SeenSide[];
 }
 
 /**
@@ -42,6 +41,7 @@ export function chanceMeetings(
   const wanted = Math.max(WANTED.least, Math.min(WANTED.most, PER_TESTED * tested));
   const score: number[] = [];
   const weight: number[] = [];
+  const seen: SeenSide[] = [];
   for (let i = 0; i < TRIES_PER_WANTED * wanted && score.length < wanted && order.length > 1; i++) {
     const p = order[random.integer(order.length)];
     const frame = tracks.frame[p];
@@ -58,17 +58,12 @@ export function chanceMeetings(
     const near = framesWithin(tracks, track[p], track[q], shift, reachPx);
     const s = separationAround(tracks, track[p], track[q], near.nearestFrame, scale.pixelSize_m, shift);
     if (!meetsAndParts(s)) continue;
+    seen.push(seenSide(s) ?? 'both');
     score.push(meetingScore(s, fitMeeting(s, scale.frameInterval_s, REDUCED_CHI2_MAX)));
     // A frame of n tracks is drawn in proportion to n but has n^2 pairs.
     weight.push(others / near.frames);
   }
-  const sum = weight.reduce((a, b) => a + b, 0);
-  const squares = weight.reduce((a, b) => a + b * b, 0);
-  return {
-    score: Float64Array.from(score),
-    weight: Float64Array.from(weight),
-    effective: squares > 0 ? (sum * sum) / squares : 0,
-  };
+  return { score: Float64Array.from(score), weight: Float64Array.from(weight), seen };
 }
 
 /** One number per pair of tracks, in any order. */
@@ -76,17 +71,25 @@ export function pairKey(tracks: Tracks, trackA: number, trackB: number): number 
   return Math.min(trackA, trackB) * tracks.count + Math.max(trackA, trackB);
 }
 
-/** Chance of a score this good or better among chance meetings, never below 1 / (effective + 1). */
-export function chanceOf(score: number, chance: ChanceMeetings): number {
+/**
+ * Chance of a score this good or better among chance meetings of which as much is seen; never below
+ * 1 / (effective + 1), the effective number being that of equally weighted meetings which carry as much
+ * information (Kish 1965).
+ */
+export function chanceOf(score: number, seen: SeenSide, chance: ChanceMeetings): number {
   if (score === -Infinity) return 1;
   let better = 0;
   let all = 0;
+  let squares = 0;
   for (let i = 0; i < chance.score.length; i++) {
+    if (chance.seen[i] !== seen) continue;
     all += chance.weight[i];
+    squares += chance.weight[i] ** 2;
     if (chance.score[i] >= score) better += chance.weight[i];
   }
+  const effective = squares > 0 ? (all * all) / squares : 0;
   const share = all > 0 ? better / all : 0;
-  return (1 + share * chance.effective) / (1 + chance.effective);
+  return (1 + share * effective) / (1 + effective);
 }
 
 function framesWithin(

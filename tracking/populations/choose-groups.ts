@@ -4,6 +4,7 @@ import {
   mixtureParameters,
   meanAt,
   responsibilities,
+  type Component,
   type Mixture,
   type MixtureData,
 } from './gaussian-mixture';
@@ -37,6 +38,8 @@ export interface ChosenGroups {
   groups: GroupMeans[];
   /** Rows of as many probabilities as groups. */
   probability: Float64Array;
+  /** The two components in the order of `groups`; null where there is one group or none. */
+  two: readonly [Component, Component] | null;
 }
 
 /** Schwarz's Bayesian information criterion: parameters * ln n - 2 ln L. */
@@ -90,12 +93,13 @@ export function chooseGroups(table: FeatureTable, scaled: Standardised, seed: nu
     const smaller = Math.min(a.weight, b.weight);
     const counts = smaller > SMALLER_WEIGHT_MIN && smaller * table.n > SMALLER_TRACKS_MIN;
     if (one - two > BIC_GAIN_MIN && ashmanD > ASHMAN_D_MIN && counts) {
-      return { bic, ashmanD, groups, probability: full[1].responsibilities };
+      const [first, second] = fits[1].components;
+      return { bic, ashmanD, groups, probability: full[1].responsibilities, two: [first, second] };
     }
   }
   const single = fits[0];
   const groups = single ? groupMeans(table, scaled, single, new Float64Array(table.n).fill(1)) : [];
-  return { bic, ashmanD, groups, probability: new Float64Array(table.n).fill(1) };
+  return { bic, ashmanD, groups, probability: new Float64Array(table.n).fill(1), two: null };
 }
 
 function groupMeans(table: FeatureTable, scaled: Standardised, fit: Mixture, q: Float64Array): GroupMeans[] {

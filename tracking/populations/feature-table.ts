@@ -28,8 +28,7 @@ export function featureTable(
   const value: number[] = [];
   const variance: number[] = [];
   const across: number[] = [];
-  const middle = alongAcross((image.width - 1) / 2, (image.height - 1) / 2, flow)[1];
-  const half = (Math.abs(flow[1]) * image.width + Math.abs(flow[0]) * image.height) / 2;
+  const place = placeAcross(image, flow);
   for (let i = 0; i < tracks.count; i++) {
     const features = trackFeatures(
       trackSlice(tracks, i),
@@ -41,7 +40,7 @@ export function featureTable(
     rows.push(i);
     value.push(...features.value);
     variance.push(...features.variance);
-    across.push((features.acrossPx - middle) / half);
+    across.push(place(features.acrossPx));
   }
   return {
     n: rows.length,
@@ -50,6 +49,16 @@ export function featureTable(
     variance: Float64Array.from(variance),
     across: Float64Array.from(across),
   };
+}
+
+/** Turns a place across the flow, px, into -1 to 1 over the image. */
+export function placeAcross(
+  image: { width: number; height: number },
+  flow: readonly [number, number],
+): (acrossPx: number) => number {
+  const middle = alongAcross((image.width - 1) / 2, (image.height - 1) / 2, flow)[1];
+  const half = (Math.abs(flow[1]) * image.width + Math.abs(flow[0]) * image.height) / 2;
+  return (acrossPx) => (acrossPx - middle) / half;
 }
 
 /** A feature that is nearly the same for most tracks is not blown up beyond this part of its spread. */

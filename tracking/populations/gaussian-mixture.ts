@@ -57,6 +57,20 @@ export function responsibilities(data: MixtureData, components: Component[]) {
   return { responsibilities: out, lnLikelihood };
 }
 
+/** Gives ln density of a row under a component, measurement errors included; its scratch is used again. */
+export function densityMeter(dims: number): (data: MixtureData, row: number, component: Component) => number {
+  const work = new RowWork(dims);
+  return (data, row, component) => work.lnDensity(data, row, component);
+}
+
+/** A component of the first values alone: the others are left open. */
+export function marginal(component: Component, dims: number, kept: number): Component {
+  const covariance = new Float64Array(kept * kept);
+  for (let d = 0; d < kept; d++)
+    for (let e = 0; e < kept; e++) covariance[d * kept + e] = component.covariance[d * dims + e];
+  return { weight: component.weight, beta: component.beta.slice(0, kept + 2), covariance };
+}
+
 /**
  * Expectation-maximisation for Gaussians seen through known measurement errors (Bovy, Hogg &
  * Roweis, Ann. Appl. Stat. 5, 1657 (2011)), the mean of the first value a quadratic in a

@@ -2,16 +2,14 @@ import { expectedFlow, type ExpectedFlow } from '../flow/expected-flow';
 import type { GroupName, PopulationSummary } from '../flow-measures';
 import { POPULATIONS, type Conditions, type Recipe, type Tracks } from '../types';
 import { unitFlow } from '../velocities';
+import { changesOfState, type StateChange } from './changes-of-state';
+import { FREE, TRAPPED, UNDECIDED } from './codes';
 import { chooseGroups, type ChosenGroups } from './choose-groups';
 import { featureTable, standardise, type FeatureTable } from './feature-table';
 import { nameSingleGroup, nameTwoGroups, type Naming } from './name-groups';
 import { FEATURES } from './track-features';
 import { transverseKurtosis } from './transverse-kurtosis';
 import { wilsonInterval } from './wilson';
-
-export const TRAPPED = POPULATIONS.indexOf('trapped');
-export const FREE = POPULATIONS.indexOf('free');
-export const UNDECIDED = POPULATIONS.indexOf('undecided');
 
 /** Fewer tracks than this can't be told apart, nor named. */
 const JUDGED_MIN = 10;
@@ -24,6 +22,10 @@ export interface TrackPopulations {
   /** Probability of being trapped, NaN where there is none. */
   pTrapped: Float32Array;
   summary: PopulationSummary;
+  /** Captures and releases, by track and frame. */
+  changes: StateChange[];
+  /** What the tracks were judged by. */
+  table: FeatureTable;
 }
 
 /**
@@ -49,10 +51,13 @@ export function findPopulations(
       ashmanD: null,
       groups: [],
       probability: new Float64Array(),
+      two: null,
     };
-    return { population, pTrapped, summary: summarise(population, table, none, { names: [], note }) };
+    const summary = summarise(population, table, none, { names: [], note });
+    return { population, pTrapped, summary, changes: [], table };
   }
-  const chosen = chooseGroups(table, standardise(table), recipe.seed);
+  const scaled = standardise(table);
+  const chosen = chooseGroups(table, scaled, recipe.seed);
   const expectation = expectedFlow(conditions);
   const known = 'refused' in expectation ? null : expectation;
   // Without a direction the velocity along the flow means nothing.
@@ -75,7 +80,15 @@ export function findPopulations(
       population[track] = FREE;
     }
   }
-  return { population, pTrapped, summary: summarise(population, table, chosen, naming) };
+  const changes =
+    chosen.two && trapped >= 0
+      ? changesOfState(tracks, image, conditions, flow, {
+          scaled,
+          trapped: chosen.two[trapped],
+          free: chosen.two[1 - trapped],
+        })
+      : [];
+  return { population, pTrapped, summary: summarise(population, table, chosen, naming), changes, table };
 }
 
 function nameOne(

@@ -9,10 +9,10 @@ export const FEATURES = 4;
 /** A variance left after subtracting noise is floored at this part of the noise. */
 const NOISE_FLOOR = 0.1;
 /** Lag of the transverse velocity, frames: halves the noise and still fits into 8 positions. */
-const TRANSVERSE_LAG = 2;
+export const TRANSVERSE_LAG = 2;
 /** Sum of squared autocorrelations of the noise of overlapping first and second differences. */
-const FIRST_DIFFERENCE_OVERLAP = 1.5;
-const SECOND_DIFFERENCE_OVERLAP = 1.944;
+export const FIRST_DIFFERENCE_OVERLAP = 1.5;
+export const SECOND_DIFFERENCE_OVERLAP = 1.944;
 /** A logarithm less certain than this says nothing. */
 const LN_ERROR_MAX = 2;
 
@@ -100,7 +100,7 @@ function meanSquare(n: number, lag: number, square: (i: number, j: number) => nu
 }
 
 /** ln of an r.m.s. after subtracting its noise, and the variance that the noise gives it. */
-function lnRms({ mean, samples }: { mean: number; samples: number }, noise: number, overlap: number) {
+export function lnRms({ mean, samples }: { mean: number; samples: number }, noise: number, overlap: number) {
   if (samples === 0) return { value: Number.NaN, variance: Number.NaN };
   const floor = Math.max(NOISE_FLOOR * noise, Number.MIN_VALUE);
   const signal = Math.max(mean - noise, floor);

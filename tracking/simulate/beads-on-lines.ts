@@ -2,6 +2,7 @@ import { createRandom, mixSeed } from '../random';
 import { blink, tracerBrightness } from './blink';
 import { burstPath } from './burst-path';
 import { isotropicLines, normalsOf, type Box } from './isotropic-lines';
+import { longestStep, type MovingLine } from './moving-line';
 import { KIND_TRAPPED } from './scene';
 import type { SceneBuilder } from './scene-builder';
 import { smoothPath, smoothPathReach } from './smooth-path';
@@ -14,9 +15,11 @@ const BURST_ROOM_M = 0.2e-3;
  * Isotropic lines that drift with the tangle and wobble as a whole, with trapped tracers along
  * them as a Poisson process. The lines fill a box so much larger than the sheet that the density
  * in it stays the same while they move.
+ *
+ * @returns the lines where tracers can be caught by them, else nothing.
  */
-export function addBeadsOnLines(builder: SceneBuilder, o: FilledTangleOptions, seed: number): void {
-  if (o.lineDensityM2 === 0) return;
+export function addBeadsOnLines(builder: SceneBuilder, o: FilledTangleOptions, seed: number): MovingLine[] {
+  if (o.lineDensityM2 === 0) return [];
   const { frames, frameIntervalS: dt, pixelSizeM: px } = o;
   const durationS = frames * dt;
   const room = smoothPathReach(o.wobbleMPerS, o.wobbleTimeS, durationS) + BURST_ROOM_M;
@@ -36,12 +39,19 @@ export function addBeadsOnLines(builder: SceneBuilder, o: FilledTangleOptions, s
   const yPx = new Float64Array(frames);
   const visible = new Uint8Array(frames);
 
+  const moving: MovingLine[] = [];
   lines.forEach((line, index) => {
     const random = createRandom(mixSeed(seed, index + 1));
     const beads = random.poisson(o.beadsPerMetre * (line.to - line.from));
-    if (beads === 0) return;
+    if (beads === 0 && o.captureRadiusM === 0) return;
     const path = [0, 1, 2].map(() => smoothPath(random, frames, dt, o.wobbleMPerS, o.wobbleTimeS));
     const jump = burstPath(random, frames, dt, o.burstsPerLineS);
+    if (o.captureRadiusM > 0) {
+      const shift = [0, 1, 2].map((a) =>
+        path[a].map((of, k) => of + drift[a] * k * dt + (a === 0 ? jump.x[k] : a === 1 ? jump.y[k] : 0)),
+      );
+      moving.push({ line, shift: shift as MovingLine['shift'], longestStepM: longestStep(shift) });
+    }
     const [normal] = normalsOf(line.direction);
     const waveNumber = (2 * Math.PI) / o.bendLengthM;
     const phase = 2 * Math.PI * random.uniform();
@@ -66,4 +76,5 @@ export function addBeadsOnLines(builder: SceneBuilder, o: FilledTangleOptions, s
       );
     }
   });
+  return moving;
 }

@@ -1,6 +1,8 @@
 import { createRandom, mixSeed } from '../random';
 import { blink, tracerBrightness } from './blink';
-import { KIND_FREE } from './scene';
+import { followCapture } from './follow-capture';
+import type { MovingLine } from './moving-line';
+import { KIND_FREE, type SceneCapture } from './scene';
 import type { SceneBuilder } from './scene-builder';
 import { smoothPath, smoothPathReach } from './smooth-path';
 import type { FilledTangleOptions } from './tangle-options';
@@ -13,7 +15,13 @@ const AXIS_OVER_MEAN = 1.5;
  * directions (which takes them out of the sheet and back). They fill a box long enough upstream
  * that their number in the sheet stays the same.
  */
-export function addFreeTracers(builder: SceneBuilder, o: FilledTangleOptions, seed: number): void {
+export function addFreeTracers(
+  builder: SceneBuilder,
+  o: FilledTangleOptions,
+  lines: readonly MovingLine[],
+  seed: number,
+): SceneCapture[] {
+  const captures: SceneCapture[] = [];
   const { frames, frameIntervalS: dt, pixelSizeM: px } = o;
   const [fx, fy] = o.flowDirection;
   const width = o.widthPx * px;
@@ -42,12 +50,18 @@ export function addFreeTracers(builder: SceneBuilder, o: FilledTangleOptions, se
     const u = Math.max(0, AXIS_OVER_MEAN * o.vnMPerS * (1 - ((2 * across) / o.channelWidthM) ** 2));
     const path = [0, 1, 2].map(() => smoothPath(random, frames, dt, o.freeWobbleMPerS, o.freeWobbleTimeS));
     for (let k = 0; k < frames; k++) {
-      xPx[k] = (x0 + fx * u * k * dt + path[0][k]) / px - 0.5;
-      yPx[k] = (y0 + fy * u * k * dt + path[1][k]) / px - 0.5;
-      visible[k] = Math.abs(z0 + path[2][k]) < half ? 1 : 0;
+      path[0][k] += x0 + fx * u * k * dt;
+      path[1][k] += y0 + fy * u * k * dt;
+      path[2][k] += z0;
+    }
+    const caught = followCapture(path, lines, o.captureRadiusM);
+    for (let k = 0; k < frames; k++) {
+      xPx[k] = path[0][k] / px - 0.5;
+      yPx[k] = path[1][k] / px - 0.5;
+      visible[k] = Math.abs(path[2][k]) < half ? 1 : 0;
     }
     blink(random, visible, o.blinkPerFrame);
-    builder.add(
+    const made = builder.add(
       KIND_FREE,
       -1,
       xPx,
@@ -55,5 +69,8 @@ export function addFreeTracers(builder: SceneBuilder, o: FilledTangleOptions, se
       visible,
       tracerBrightness(random, o.brightnessE, o.brightnessSpread),
     );
+    const tracer = caught === null ? undefined : builder.seenIn(made, caught);
+    if (caught !== null && tracer !== undefined) captures.push({ tracer, frame: caught });
   }
+  return captures;
 }

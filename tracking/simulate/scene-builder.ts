@@ -1,4 +1,4 @@
-import type { Scene, SceneEvent } from './scene';
+import type { Scene, SceneCapture, SceneEvent } from './scene';
 
 interface Built {
   kind: number;
@@ -61,7 +61,15 @@ export class SceneBuilder {
     return made;
   }
 
-  build(lineDensityM2: number, events: SceneEvent[]): Scene {
+  /** The one of some tracers that is seen in a frame, or undefined. */
+  seenIn(numbers: readonly number[], frame: number): number | undefined {
+    return numbers.find((number) => {
+      const { frame: frames } = this.tracers[number];
+      return frames[0] <= frame && frame <= frames[frames.length - 1];
+    });
+  }
+
+  build(lineDensityM2: number, events: SceneEvent[], captures: SceneCapture[] = []): Scene {
     const order = this.tracers
       .map((tracer, number) => ({ tracer, number }))
       .filter(({ tracer }) => tracer.frame.length > 0)
@@ -92,6 +100,10 @@ export class SceneBuilder {
         const tracerA = place.get(event.tracerA);
         const tracerB = place.get(event.tracerB);
         return tracerA === undefined || tracerB === undefined ? [] : [{ ...event, tracerA, tracerB }];
+      }),
+      captures: captures.flatMap((capture) => {
+        const tracer = place.get(capture.tracer);
+        return tracer === undefined ? [] : [{ ...capture, tracer }];
       }),
       lineDensityM2,
     };

@@ -15,6 +15,12 @@ export interface SceneEvent {
   amplitudeAfter: number;
 }
 
+/** A free tracer that a line caught: it is trapped from this frame on. */
+export interface SceneCapture {
+  tracer: number;
+  frame: number;
+}
+
 /**
  * Tracers and where they emit. Points of tracer `i` are `start[i] .. start[i + 1] - 1`, by frame;
  * a frame in which it emits nothing has no point, so frames may be missing.
@@ -36,6 +42,8 @@ export interface Scene {
   /** Per tracer: the vortex line that carries it, -1 for none. */
   line: Int32Array;
   events: SceneEvent[];
+  /** Captures of free tracers (their kind stays KIND_FREE). */
+  captures: SceneCapture[];
   /** Line density that the scene was built with, m^-2; NaN where it has no lines. */
   lineDensityM2: number;
 }

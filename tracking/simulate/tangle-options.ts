@@ -45,6 +45,8 @@ export interface TangleOptions {
   brightnessSpread?: number;
   /** Chance per frame that a tracer goes dark for a frame or two. */
   blinkPerFrame?: number;
+  /** Free tracers that come this near to a line are caught by it, m; 0 for none. */
+  captureRadiusM?: number;
   /** Pairs of trapped tracers that meet and part; extra to the line process. */
   events?: number;
 }
@@ -79,6 +81,7 @@ export function fillTangleOptions(options: TangleOptions): FilledTangleOptions {
     brightnessE: 400,
     brightnessSpread: 0.2,
     blinkPerFrame: 0.01,
+    captureRadiusM: 0,
     events: 0,
     ...options,
   };

@@ -14,8 +14,8 @@ import { fillTangleOptions, type TangleOptions } from './tangle-options';
 export function tangleScene(options: TangleOptions): Scene {
   const filled = fillTangleOptions(options);
   const builder = new SceneBuilder(filled.widthPx, filled.heightPx, filled.frames);
-  addBeadsOnLines(builder, filled, mixSeed(filled.seed, 1));
-  addFreeTracers(builder, filled, mixSeed(filled.seed, 2));
+  const lines = addBeadsOnLines(builder, filled, mixSeed(filled.seed, 1));
+  const captures = addFreeTracers(builder, filled, lines, mixSeed(filled.seed, 2));
   const events = addReconnectingPairs(builder, filled, mixSeed(filled.seed, 3));
-  return builder.build(filled.lineDensityM2 > 0 ? filled.lineDensityM2 : Number.NaN, events);
+  return builder.build(filled.lineDensityM2 > 0 ? filled.lineDensityM2 : Number.NaN, events, captures);
 }

@@ -2,9 +2,10 @@ import { attachment } from '@/app/api/content-disposition';
 import { LabError } from '@/lib/errors';
 import { estimatesJson } from '@/lib/tables/estimates-json';
 import { reconnectionsCsv } from '@/lib/tables/reconnections-csv';
-import { streamTracksCsv, streamVelocitiesCsv } from '@/lib/tables/stream-tables';
+import { streamTracksCsv, streamVelocitiesCsv, withSegments } from '@/lib/tables/stream-tables';
 import { velocityPdfCsv } from '@/lib/tables/velocity-pdf-csv';
 import { readOrder, readReconnections } from '@/models/queries/analysis-outcome';
+import { readSegments } from '@/models/queries/read-segments';
 import { streamTracks } from '@/models/queries/read-tracks';
 import { assertTracks, measuresOf } from '@/models/queries/read-results';
 
@@ -31,20 +32,22 @@ async function orderOf({ labId, analysisId }: TableRequest) {
   return { conditions: order.conditions, recipe: order.recipe };
 }
 
+/** Tracks with the state of every stretch. */
+async function statedTracks({ labId, analysisId }: TableRequest, revision: number) {
+  const segments = await readSegments(labId, analysisId, revision);
+  return withSegments(streamTracks(labId, analysisId, revision), segments);
+}
+
 export async function tracksTable(request: TableRequest): Promise<Pieces> {
   const revision = await revisionFor(request);
   const { conditions } = await orderOf(request);
-  return streamTracksCsv(streamTracks(request.labId, request.analysisId, revision), conditions);
+  return streamTracksCsv(await statedTracks(request, revision), conditions);
 }
 
 export async function velocitiesTable(request: TableRequest): Promise<Pieces> {
   const revision = await revisionFor(request);
   const { conditions, recipe } = await orderOf(request);
-  return streamVelocitiesCsv(
-    streamTracks(request.labId, request.analysisId, revision),
-    recipe.lagsFrames,
-    conditions,
-  );
+  return streamVelocitiesCsv(await statedTracks(request, revision), recipe.lagsFrames, conditions);
 }
 
 const measuresFor = ({ labId, analysisId, corrections }: TableRequest) =>

@@ -24,6 +24,7 @@ const measuresOf = (value: number | null): FlowMeasures =>
     pairs: {},
     pdfs: [],
     motion: { displacements: [], autocorrelations: [], tails: [] },
+    details: null,
     candidates: [],
     estimates: [
       { quantity: 'line_density', unit: 'm^-2', method: 'combined', value, low: value && value / 1.3, high: value && value * 1.3, level: 0.95, inputs: {}, note: '' }, // prettier-ignore

@@ -92,10 +92,21 @@ const get = <T>(below: string) => callJson<T>('GET', `${path}${below}`, { token 
 
 describe('tables', () => {
   it.each([
-    ['tracks.csv', () => [...tracksCsv(tableTracks(tracks, measures.tracks), CONDITIONS)].join('')],
+    [
+      'tracks.csv',
+      () =>
+        [...tracksCsv(tableTracks(tracks, measures.tracks, measures.details.segments), CONDITIONS)].join(''),
+    ],
     [
       'velocities.csv',
-      () => [...velocitiesCsv(tableTracks(tracks, measures.tracks), [1, 4], CONDITIONS)].join(''),
+      () =>
+        [
+          ...velocitiesCsv(
+            tableTracks(tracks, measures.tracks, measures.details.segments),
+            [1, 4],
+            CONDITIONS,
+          ),
+        ].join(''),
     ],
     ['velocity-pdf.csv', () => [...velocityPdfCsv(measures.pdfs)].join('')],
     ['reconnections.csv', () => [...reconnectionsCsv(measures.candidates)].join('')],

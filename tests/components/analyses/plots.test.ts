@@ -25,6 +25,7 @@ const pdf = (
   mean_m_s: 0,
   standardDeviation_m_s: 6e-4,
   noise_m_s: null,
+  excessKurtosis: null,
 });
 
 describe('the choice of velocity distributions', () => {

@@ -1,7 +1,8 @@
 import { describe, expect, test, vi } from 'vitest';
 import { chooseGroups } from '@/tracking/populations/choose-groups';
 import { standardise } from '@/tracking/populations/feature-table';
-import { findPopulations, FREE, TRAPPED, UNDECIDED } from '@/tracking/populations/populations';
+import { FREE, TRAPPED, UNDECIDED } from '@/tracking/populations/codes';
+import { findPopulations } from '@/tracking/populations/populations';
 import { createRandom } from '@/tracking/random';
 import { KIND_TRAPPED } from '@/tracking/simulate/scene';
 import { tangleScene } from '@/tracking/simulate/tangle-scene';

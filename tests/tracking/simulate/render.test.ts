@@ -29,6 +29,7 @@ function sceneOf(points: [frame: number, x: number, y: number, brightness: numbe
     kind: new Uint8Array(points.length).fill(KIND_FREE),
     line: new Int32Array(points.length).fill(-1),
     events: [],
+    captures: [],
     lineDensityM2: Number.NaN,
   };
 }
