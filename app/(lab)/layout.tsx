@@ -6,15 +6,18 @@ import { Head } from '@/components/shell/head';
 import type { Place } from '@/components/shell/places';
 import { SignInAgain } from '@/components/shell/sign-in-again';
 import { switchLab } from './actions';
+import { waitingForReview } from './review/waiting';
 
 /** Head and store of answers around every page of a laboratory. */
 export default async function LabLayout({ children }: { children: ReactNode }) {
   await requireViewer('own-account');
   const viewer = (await getViewer())!;
+  const waiting = await waitingForReview(viewer);
   const places: Place[] = [
     { href: '/', label: 'Overview' },
     { href: '/campaigns', label: 'Campaigns' },
     ...(may(viewer, 'see-data') ? [{ href: '/analyses', label: 'Analyses' }] : []),
+    ...(may(viewer, 'see-review') ? [{ href: '/review', label: 'Review', count: waiting }] : []),
     ...(may(viewer, 'compare') ? [{ href: '/compare', label: 'Compare' }] : []),
     { href: '/lab', label: 'Lab' },
   ];

@@ -17,6 +17,7 @@ import { labOverview } from '@/models/queries/overview';
 import { labStorage } from '@/models/queries/storage';
 import { addCampaign } from './campaigns/actions';
 import { pathLevels } from './path-levels';
+import { reviewWaits } from './review/waiting';
 
 export const metadata: Metadata = { title: 'Overview' };
 
@@ -28,6 +29,11 @@ export default async function OverviewPage() {
     may(viewer, 'see-storage') ? labStorage(viewer.labId) : null,
   ]);
   const { counts } = overview;
+  const waits = await reviewWaits(viewer.labId, viewer.userId);
+  const review = {
+    waiting: may(viewer, 'review') ? waits.waiting : 0,
+    disagreed: may(viewer, 'settle') ? waits.disagreed : 0,
+  };
   const margin = (
     <>
       <MarginNote title="You here">
@@ -75,7 +81,7 @@ export default async function OverviewPage() {
       <Sheet margin={margin} marginLabel="Notes">
         <h1 className="sr-only">Overview</h1>
         <Lede>
-          <OverviewSentence name={viewer.name} overview={overview} seesData={seesData} />
+          <OverviewSentence name={viewer.name} overview={overview} seesData={seesData} review={review} />
         </Lede>
         {overview.arriving.length > 0 ? (
           <Section id="uploads" title="Uploads to finish" count={countOf(overview.arriving.length, 'stack')}>

@@ -39,6 +39,8 @@ interface AnalysisSheetProps {
   conditions: string;
   stopReason: string | null;
   downloadReason: string | null;
+  /** The way to the review desk, for those who have something to do there. */
+  judge: { href: string; label: string } | null;
 }
 
 const TWO_COLUMNS =
@@ -53,6 +55,7 @@ export function AnalysisSheet({
   conditions,
   stopReason,
   downloadReason,
+  judge,
 }: AnalysisSheetProps) {
   const { data: analysis = initial, isError } = useProgress(initial.id, initial);
   const done = analysis.state === 'done';
@@ -166,6 +169,7 @@ export function AnalysisSheet({
             <CandidatesSection
               candidates={list ?? []}
               pairs={pairsOf(measures.data?.populations)}
+              judge={judge}
               chosen={chosenEvent}
               onChoose={({ event }) => store.set({ chosenEvent: event })}
               onShow={showCandidate}

@@ -1,7 +1,7 @@
 'use client';
 
 import { useState } from 'react';
-import { Button } from '@/components/ui/button';
+import { Button, ButtonLink } from '@/components/ui/button';
 import { Segment } from '@/components/ui/choice';
 import { EmptyState } from '@/components/ui/page-states';
 import { Quantity } from '@/components/ui/quantity';
@@ -10,6 +10,7 @@ import { StateWord } from '@/components/ui/state-bead';
 import { Cell, HeadCell, Row, Table } from '@/components/ui/table';
 import { countOf, formatCount } from '@/lib/format/count';
 import { DISPLAY_UNITS } from '@/lib/format/unit';
+import { REVIEW_STATE_WORDS, VERDICT_WORDS } from '@/lib/review/verdict-words';
 import type { CandidateView } from '@/lib/views/analysis-view';
 import type { PairSummary } from '@/tracking/flow-measures';
 import { CandidateDetail } from './candidate-detail';
@@ -30,14 +31,24 @@ const isOneSided = ({ before, after }: CandidateView) => before === null || afte
 interface CandidatesSectionProps {
   candidates: readonly CandidateView[];
   pairs: PairSummary | null;
+  /** The way to the review desk, for those who have something to do there. */
+  judge: { href: string; label: string } | null;
   chosen: number | null;
   onChoose: (candidate: CandidateView) => void;
   onShow: (candidate: CandidateView) => void;
 }
 
 /** Pairs of tracks that meet and part, and what is known of the one that is chosen. */
-export function CandidatesSection({ candidates, pairs, chosen, onChoose, onShow }: CandidatesSectionProps) {
+export function CandidatesSection({
+  candidates,
+  pairs,
+  judge,
+  chosen,
+  onChoose,
+  onShow,
+}: CandidatesSectionProps) {
   const accepted = candidates.filter((candidate) => candidate.accepted);
+  const events = candidates.filter(({ verdict }) => verdict === 'yes').length;
   const [which, setWhich] = useState<Which>(accepted.length > 0 ? 'accepted' : 'both');
   const [shown, setShown] = useState(ROWS);
   const listed = {
@@ -50,10 +61,13 @@ export function CandidatesSection({ candidates, pairs, chosen, onChoose, onShow 
     <Section
       id="candidates"
       title="Reconnection candidates"
-      count={`${formatCount(accepted.length)} of ${countOf(candidates.length, 'pair')} accepted`}
+      count={`${formatCount(accepted.length)} of ${countOf(candidates.length, 'pair')} accepted, ${countOf(events, 'event')} confirmed by people`}
       tools={
         candidates.length > 0 ? (
-          <Segment label="Candidates" options={WHICH} value={which} onChange={setWhich} />
+          <>
+            {judge ? <ButtonLink href={judge.href}>{judge.label}</ButtonLink> : null}
+            <Segment label="Candidates" options={WHICH} value={which} onChange={setWhich} />
+          </>
         ) : null
       }
     >
@@ -84,7 +98,8 @@ export function CandidatesSection({ candidates, pairs, chosen, onChoose, onShow 
                     <HeadCell numeric>
                       <i>q</i>
                     </HeadCell>
-                    <HeadCell>Outcome</HeadCell>
+                    <HeadCell>Criteria</HeadCell>
+                    <HeadCell>Verdict</HeadCell>
                     <HeadCell silent>In the frames</HeadCell>
                   </tr>
                 </thead>
@@ -156,6 +171,17 @@ function CandidateRow({ candidate, chosen, onChoose }: CandidateRowProps) {
           <StateWord state="done">accepted</StateWord>
         ) : (
           <StateWord state="stopped">{countOf(failed.length, 'criterion', 'criteria')} failed</StateWord>
+        )}
+      </Cell>
+      <Cell>
+        {candidate.verdict ? (
+          VERDICT_WORDS[candidate.verdict]
+        ) : (
+          <span className="text-ink-3">
+            {candidate.review === 'hidden' && candidate.ownVerdict
+              ? `you: ${VERDICT_WORDS[candidate.ownVerdict].toLowerCase()}`
+              : REVIEW_STATE_WORDS[candidate.review]}
+          </span>
         )}
       </Cell>
       <Cell numeric>

@@ -4,6 +4,7 @@ import { useRouter } from 'next/navigation';
 import { useState } from 'react';
 import { noticeRefusal } from '@/components/shell/session-ended';
 import { Button } from '@/components/ui/button';
+import { Segment } from '@/components/ui/choice';
 import { Dialog } from '@/components/ui/dialog';
 import { Field, TextArea } from '@/components/ui/field';
 import { ErrorState } from '@/components/ui/page-states';
@@ -20,7 +21,7 @@ interface CampaignDialogProps {
   kind?: 'main' | 'outlined';
   title: string;
   submitLabel: string;
-  initial?: { name: string; description: string | null; tags: readonly string[] };
+  initial?: { name: string; description: string | null; tags: readonly string[]; readings: number };
   save: (campaign: CampaignCreate) => Promise<SaveCampaignResult>;
 }
 
@@ -35,6 +36,7 @@ export function CampaignDialog({
 }: CampaignDialogProps) {
   const router = useRouter();
   const [open, setOpen] = useState(false);
+  const [readings, setReadings] = useState(String(initial?.readings ?? 1));
   const [busy, setBusy] = useState(false);
   const [name, setName] = useState(initial?.name ?? '');
   const [description, setDescription] = useState(initial?.description ?? '');
@@ -48,6 +50,7 @@ export function CampaignDialog({
       name,
       description: description.trim() || null,
       tags: splitTags(tags),
+      readings: Number(readings),
     });
     if (!checked.success) {
       const errors = checked.error.issues.map(({ path, message }) => ({ path: path.join('.'), message }));
@@ -120,6 +123,17 @@ export function CampaignDialog({
             value={tags}
             onChange={(event) => setTags(event.target.value)}
             error={errorAt('tags')}
+          />
+          <Segment
+            label="People who judge each reconnection candidate"
+            showLabel
+            options={[
+              { value: '1', label: 'one' },
+              { value: '2', label: 'two, blind' },
+              { value: '3', label: 'three, blind' },
+            ]}
+            value={readings}
+            onChange={setReadings}
           />
           {problem && !['name', 'description', 'tags'].some(errorAt) ? (
             <ErrorState live what={problem.detail} />

@@ -17,10 +17,20 @@ export function candidateMarks(
     xPx: candidate.x_px,
     yPx: candidate.y_px,
     partingRad: 0,
-    accepted: candidate.accepted,
+    kind: kindOf(candidate),
     trackA: candidate.trackA,
     trackB: candidate.trackB,
   }));
+}
+
+/** People's verdict wins over the machine's. */
+export function kindOf({
+  verdict,
+  accepted,
+}: Pick<CandidateView, 'verdict' | 'accepted'>): CandidateMark['kind'] {
+  if (verdict === 'yes') return 'confirmed';
+  if (verdict === 'no') return 'rejected';
+  return accepted ? 'candidate' : 'rejected';
 }
 
 /** The axis along which two tracks part after a frame, radians from x towards y; 0 where it can't be told. */

@@ -9,7 +9,8 @@ export interface CandidateMark {
   yPx: number;
   /** Axis along which the two part, radians from x towards y. */
   partingRad: number;
-  accepted: boolean;
+  /** What people settled, or else what the machine thinks of it. */
+  kind: 'confirmed' | 'candidate' | 'rejected';
 }
 
 const RADIUS_PX = 9;
@@ -25,7 +26,10 @@ interface DrawOptions {
   chosen: number | null;
 }
 
-/** Two arcs back to back, turned to the axis of parting: lines that met and parted. Dashed while nobody has judged it. */
+/**
+ * Two arcs back to back, turned to the axis of parting: lines that met and parted. Solid once people
+ * confirmed it, dashed until then; a cross for what is none.
+ */
 export function drawCandidates(
   ctx: CanvasRenderingContext2D,
   marks: readonly CandidateMark[],
@@ -40,9 +44,9 @@ export function drawCandidates(
     ctx.rotate(mark.partingRad);
     ctx.lineCap = 'round';
     if (mark.event === options.chosen) ring(ctx, options.colours.chosen);
-    if (mark.accepted) {
+    if (mark.kind !== 'rejected') {
       arcs(ctx, EVENT_CASING, 4.6, []);
-      arcs(ctx, options.colours.event, 1.9, CANDIDATE_DASHES_PX);
+      arcs(ctx, options.colours.event, 1.9, mark.kind === 'confirmed' ? [] : CANDIDATE_DASHES_PX);
     } else {
       cross(ctx, EVENT_CASING, 4.2);
       cross(ctx, options.colours.undecided, 1.5);

@@ -40,14 +40,7 @@ export function TrackViewer(props: TrackViewerProps) {
         : candidateMarks(candidates, recording.frameIntervalS, recording.frames),
     [candidates, recording.frameIntervalS, recording.frames],
   );
-  const events = useMemo(
-    () =>
-      marks.map(({ frame, accepted }) => ({
-        frame,
-        kind: accepted ? ('candidate' as const) : ('rejected' as const),
-      })),
-    [marks],
-  );
+  const events = useMemo(() => marks.map(({ frame, kind }) => ({ frame, kind })), [marks]);
   const [picker] = useState(createPickerCache);
 
   useEffect(() => {

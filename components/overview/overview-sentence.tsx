@@ -35,10 +35,13 @@ export function OverviewSentence({
   name,
   overview,
   seesData,
+  review,
 }: {
   name: string;
   overview: OverviewView;
   seesData: boolean;
+  /** What waits on the review desk for this person. */
+  review: { waiting: number; disagreed: number };
 }) {
   const { counts, arriving, results } = overview;
   const waits: ReactNode[] = [];
@@ -64,6 +67,23 @@ export function OverviewSentence({
   if (counts.failed > 0) {
     const words = plural(counts.failed, 'analysis', 'analyses');
     waits.push(<>{seesData ? <Link href="/analyses?analyses-state=failed">{words}</Link> : words} failed</>);
+  }
+  if (review.waiting > 0) {
+    const words = plural(review.waiting, 'candidate', 'candidates');
+    waits.push(
+      <>
+        <Link href="/review">{words}</Link> {review.waiting === 1 ? 'waits' : 'wait'} for your judgement
+      </>,
+    );
+  }
+  if (review.disagreed > 0) {
+    const words = plural(review.disagreed, 'disagreement', 'disagreements');
+    waits.push(
+      <>
+        <Link href="/review#disagreements">{words}</Link> of readers{' '}
+        {review.disagreed === 1 ? 'waits' : 'wait'} for your word
+      </>,
+    );
   }
   const disagree = results.filter(
     ({ lineDensity }) => !lineDensity.some(({ method, value }) => method === 'combined' && value !== null),

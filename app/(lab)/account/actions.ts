@@ -7,9 +7,11 @@ import type { ChangePasswordResult } from '@/components/account/password-form';
 import { askForAccountMail } from '@/jobs/send-mail';
 import { baseUrl } from '@/lib/env';
 import { LabError } from '@/lib/errors';
+import { reviewKeysSchema, type ReviewKeys } from '@/lib/review/review-keys';
 import { NOTICE_KINDS, type NoticeKind } from '@/lib/mail/mail-kinds';
 import { getSequelize } from '@/models/database';
 import { endSessions } from '@/models/queries/account-links';
+import { setReviewKeys } from '@/models/queries/review-keys';
 import { setNoticesOff } from '@/models/queries/notices';
 import { passwordHashOf, setPassword } from '@/models/queries/passwords';
 import { writeAudit } from '@/models/queries/write-audit';
@@ -60,4 +62,18 @@ export async function endOwnSessions(): Promise<{ ok: true } | { ok: false; deta
 export async function changeOwnPassword(current: string, next: string): Promise<ChangePasswordResult> {
   const result = await change({ current, next });
   return result.ok ? { ok: true } : { ok: false, detail: result.problem.detail };
+}
+
+const reviewKeys = memberAction('review', reviewKeysSchema, async ({ viewer, input }) => {
+  await setReviewKeys(viewer.labId, viewer.userId, input);
+});
+
+/** Which key does what on the review desk. */
+export async function saveReviewKeys(
+  keys: Partial<ReviewKeys>,
+): Promise<{ ok: true } | { ok: false; detail: string }> {
+  const result = await reviewKeys(keys);
+  if (result.ok) return { ok: true };
+  const { errors, detail } = result.problem;
+  return { ok: false, detail: errors[0]?.message ?? detail };
 }

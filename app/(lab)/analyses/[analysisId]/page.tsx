@@ -1,7 +1,7 @@
 import type { Metadata } from 'next';
 import { cache } from 'react';
 import { requireViewer } from '@/auth/page';
-import { may, mayTo } from '@/auth/viewer';
+import { may, mayTo, type Viewer } from '@/auth/viewer';
 import { AnalysisSheet } from '@/components/analyses/analysis-sheet';
 import { viewedRecording } from '@/components/canvas/viewed-recording';
 import { NoPermission } from '@/components/ui/page-states';
@@ -56,6 +56,7 @@ export default async function AnalysisPage({ params }: Props) {
                 ? null
                 : `It can be stopped by: ${whoMay('stop-analysis')}.`
             }
+            judge={deskOf(viewer, analysis.id)}
             downloadReason={
               may(viewer, 'download-tables') ? null : `Files can be had by: ${whoMay('download-tables')}.`
             }
@@ -68,4 +69,11 @@ export default async function AnalysisPage({ params }: Props) {
       </Sheet>
     </>
   );
+}
+
+function deskOf(viewer: Viewer, analysisId: string): { href: string; label: string } | null {
+  if (may(viewer, 'review')) return { href: `/review/${analysisId}`, label: 'Judge them' };
+  return may(viewer, 'settle')
+    ? { href: `/review/${analysisId}/settle`, label: 'Settle disagreements' }
+    : null;
 }
