@@ -34,6 +34,7 @@ const shown = (key: string) => key.toUpperCase();
 /** Three verdicts of the same weight and without colour, then the reasons, each with its key. */
 export function VerdictPanel(props: VerdictPanelProps) {
   const { question, keys, draft, said, onVerdict, onReason, onInWords, onDraft, onCommit } = props;
+  const { reasonField, noteField } = props;
   const asks = draft.verdict !== null && draft.verdict !== 'yes';
   return (
     <section aria-labelledby="verdict-question">
@@ -92,7 +93,7 @@ export function VerdictPanel(props: VerdictPanelProps) {
         <label className="block pt-2 text-small text-ink-2">
           Reason, then Enter
           <input
-            ref={props.reasonField}
+            ref={reasonField}
             value={draft.reason}
             maxLength={200}
             onChange={(event) => onDraft({ reason: event.target.value })}
@@ -114,7 +115,7 @@ export function VerdictPanel(props: VerdictPanelProps) {
           <KeyCap>{shown(keys.note)}</KeyCap> Note, goes with the verdict
         </span>
         <textarea
-          ref={props.noteField}
+          ref={noteField}
           rows={2}
           maxLength={2000}
           value={draft.note}

@@ -217,7 +217,7 @@ describe('candidates are judged', () => {
     const other = items.filter(({ event }) => said.get(event) === 'no').slice(0, 2);
     for (const { id, event } of items) {
       const verdict = other.some((one) => one.id === id) ? 'yes' : said.get(event);
-      const response = await second.fetch(`/api/v1/candidates/${id}/verdict`, {
+      const response = await second.request(`/api/v1/candidates/${id}/verdict`, {
         method: 'PUT',
         headers: { 'Content-Type': 'application/json', 'If-Match': '"1"' },
         body: JSON.stringify({ verdict }),
@@ -226,7 +226,7 @@ describe('candidates are judged', () => {
     }
     const pi = new ApiScript(server.baseUrl, lab.people.principal_investigator.token);
     const strip = await until(
-      () => pi.fetch(`/api/v1/candidates/${other[0].id}/strip`),
+      () => pi.request(`/api/v1/candidates/${other[0].id}/strip`),
       ({ status }) => status === 200,
       { withinMs: 90_000, everyMs: 300 },
     );
@@ -262,7 +262,7 @@ describe('candidates are judged', () => {
     }
     await page.getByText('All is settled.').waitFor();
 
-    const csv = await new ApiScript(server.baseUrl, lab.people.analyst.token).fetch(`/api/v1/analyses/${analysisId}/reconnections.csv`); // prettier-ignore
+    const csv = await new ApiScript(server.baseUrl, lab.people.analyst.token).request(`/api/v1/analyses/${analysisId}/reconnections.csv`); // prettier-ignore
     const column = (await csv.text())
       .trim()
       .split('\r\n')
