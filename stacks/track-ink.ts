@@ -13,6 +13,7 @@ const CASING_OPACITY = 0.78;
 const CASING_HALF = 1.2;
 const THREAD_HALF = 0.55;
 const BEAD_RADIUS = 2.1;
+const BEAD_STEP_PX = 7;
 const TAPER_HALF = { tail: 0.25, head: 1.6 };
 const DASH_HALF = 0.65;
 const DASH_PX = 4;
@@ -41,9 +42,7 @@ export function inkTrack(canvas: Canvas, { population, points }: InkPath, layer:
       inkLine(canvas, a, b, even(thread + (casing ? 0.6 : 0)), ink(COLOURS.trapped)),
     );
     if (casing) return;
-    for (const { x, y, bridged } of points) {
-      if (!bridged) inkDisc(canvas, [x, y], BEAD_RADIUS, ink(COLOURS.trapped));
-    }
+    for (const bead of beadsOf(points)) inkDisc(canvas, bead, BEAD_RADIUS, ink(COLOURS.trapped));
   } else if (population === 1) {
     const last = Math.max(1, line.length - 1);
     const half = (i: number) => TAPER_HALF.tail + ((TAPER_HALF.head - TAPER_HALF.tail) * i) / last + grow;
@@ -53,6 +52,18 @@ export function inkTrack(canvas: Canvas, { population, points }: InkPath, layer:
   } else if (casing) {
     eachSegment(line, (a, b) => inkLine(canvas, a, b, even(DASH_HALF + grow), ink(CASING)));
   } else eachDash(line, (a, b) => inkLine(canvas, a, b, even(DASH_HALF), ink(COLOURS.undecided)));
+}
+
+/** Measured positions that carry a bead: the newest, and others so far apart that beads stay beads. */
+function beadsOf(points: InkPath['points']): Point[] {
+  const beads: Point[] = [];
+  for (let i = points.length - 1; i >= 0; i--) {
+    const { x, y, bridged } = points[i];
+    const last = beads.at(-1);
+    if (bridged || (last && Math.hypot(x - last[0], y - last[1]) < BEAD_STEP_PX)) continue;
+    beads.push([x, y]);
+  }
+  return beads;
 }
 
 const even = (half: number) => ({ from: half, to: half });
