@@ -1,7 +1,6 @@
 import { chooseKernels } from '@/jobs/compute/kernels';
-import type { StackReader } from '@/stacks/open-stack';
 import { plainKernels } from '@/tracking/kernels/plain-kernels';
-import { runCore } from './core-run';
+import { startCore } from './core-process';
 import { medianRun, type PipelineRun } from './pipeline-run';
 import type { BenchRecording } from './recording';
 import { runReference } from './reference-run';
@@ -16,59 +15,71 @@ export interface Comparison {
   quick: PipelineRun;
   /** Full effort by the kernels that need no SIMD; null where nothing else runs anyway. */
   plainKernels: PipelineRun | null;
-  /** The first pass of the process, before the compilers knew what to do; null where it had run before. */
-  cold: PipelineRun | null;
+  /** The first pass of full effort, before the compilers knew what to do. */
+  cold: PipelineRun;
 }
 
 interface CompareOptions {
-  stack: StackReader;
+  stackDir: string;
   python: string | null;
   folder: string;
   rounds: number;
-  /** True where this process has not computed anything yet. */
-  fresh: boolean;
   note(text: string): void;
 }
 
-/** Lets the pipelines take turns, so that a disturbance of the machine meets all of them. The first round warms up and isn't counted. */
+/**
+ * Passes that warm a process up and aren't counted. Most of measuring the image and of linking runs once a
+ * recording, so that the compilers need some recordings to see what is worth their work.
+ */
+const WARM_ROUNDS = 6;
+/** Without SIMD the warm-up takes long and changes little. */
+const PLAIN_WARM_ROUNDS = 2;
+
+/**
+ * Lets the pipelines take turns, so that a disturbance of the machine meets all of them; each has a process
+ * of its own, which the others leave alone.
+ */
 export async function comparePipelines(
   recording: BenchRecording,
-  { stack, python, folder, rounds, fresh, note }: CompareOptions,
+  { stackDir, python, folder, rounds, note }: CompareOptions,
 ): Promise<Comparison> {
-  const kernels = chooseKernels();
-  const both = kernels.name !== plainKernels.name;
+  const withSimd = chooseKernels().name !== plainKernels.name;
+  const full = startCore(stackDir, 'full', 'auto');
+  const quick = startCore(stackDir, 'quick', 'auto');
+  const plain = withSimd ? startCore(stackDir, 'full', 'plain') : null;
   const runs = new Map<string, PipelineRun[]>();
   const keep = (key: string, run: PipelineRun) => runs.set(key, [...(runs.get(key) ?? []), run]);
-  let cold: PipelineRun | null = null;
-  for (let round = 0; round <= rounds; round++) {
-    note(round === 0 ? `Warming up on the ${recording.name} set` : `Round ${round} of ${rounds}`);
-    const full = await runCore(stack, 'full', kernels);
-    const quick = await runCore(stack, 'quick', kernels);
-    const plain = both ? await runCore(stack, 'full', plainKernels) : null;
-    if (round === 0) {
-      if (fresh) cold = { ...full, name: 'full, first pass' };
-      continue;
+  try {
+    note(`Warming up on the ${recording.name} set`);
+    const cold = { ...(await full.round()), name: 'full, first pass' };
+    for (let round = 1; round < WARM_ROUNDS; round++) await full.round();
+    for (let round = 0; round < WARM_ROUNDS; round++) await quick.round();
+    for (let round = 0; plain && round < PLAIN_WARM_ROUNDS; round++) await plain.round();
+    for (let round = 1; round <= rounds; round++) {
+      note(`Round ${round} of ${rounds}`);
+      keep('full', await full.round());
+      keep('quick', await quick.round());
+      if (plain) keep('plain', await plain.round());
+      if (!python) continue;
+      keep('plain script', await runReference(python, 'plain', recording, folder));
+      keep('tuned script', await runReference(python, 'tuned', recording, folder));
     }
-    keep('full', full);
-    keep('quick', quick);
-    if (plain) keep('plain', plain);
-    if (!python) continue;
-    keep('plain script', await runReference(python, 'plain', recording, folder));
-    keep('tuned script', await runReference(python, 'tuned', recording, folder));
+    const median = (key: string) => {
+      const all = runs.get(key);
+      return all ? medianRun(all) : null;
+    };
+    return {
+      recording,
+      plainScript: median('plain script'),
+      tunedScript: median('tuned script'),
+      full: medianRun(runs.get('full') ?? []),
+      quick: medianRun(runs.get('quick') ?? []),
+      plainKernels: median('plain'),
+      cold,
+    };
+  } finally {
+    for (const core of [full, quick, plain]) await core?.close();
   }
-  const median = (key: string) => {
-    const all = runs.get(key);
-    return all ? medianRun(all) : null;
-  };
-  return {
-    recording,
-    plainScript: median('plain script'),
-    tunedScript: median('tuned script'),
-    full: medianRun(runs.get('full') ?? []),
-    quick: medianRun(runs.get('quick') ?? []),
-    plainKernels: median('plain'),
-    cold,
-  };
 }
 
 /** All pipelines of a comparison, the scripts first. */

@@ -25,7 +25,7 @@ export async function runCore(
     for (let f = 0; f < frames; f++) await stack.readFrame(f, room);
   });
 
-  const numbers = pickModelFrames(frames, width * height);
+  const numbers = pickModelFrames(frames, width * height, effort);
   const picked: Frame[] = [];
   for (const f of numbers) picked.push(await stack.readFrame(f));
   let model!: ImageModel;
@@ -80,7 +80,7 @@ function searchSeconds(
   const level = levelForFalseMaxima(recipe.falseSpotsPerFrame, spotSigmaPx, width * height);
   return cpuSeconds(() => {
     for (const { counts } of picked) {
-      images.toElectrons(counts, { offsetCounts, perCount: 1 / recipe.gain, saturationCounts });
+      images.setFrame(counts, { offsetCounts, perCount: 1 / recipe.gain, saturationCounts });
       images.respond({ scale: 1, shift: 0 }, recipe.readNoise_e ** 2);
       images.findPeaks(level);
     }

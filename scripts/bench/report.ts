@@ -6,7 +6,7 @@ import { figure, textTable } from './text-table';
 /** Throughputs of one core, stage by stage, and how many times the script's each is. */
 export function speedTable(comparison: Comparison): string {
   const { plainScript, tunedScript, cold, recording } = comparison;
-  const all = [...pipelinesOf(comparison), ...(cold ? [cold] : [])];
+  const all = [...pipelinesOf(comparison), cold];
   const beside = (value: number, ofScript: number | undefined) =>
     ofScript === undefined ? figure(value) : `${figure(value)} (${figure(value / ofScript)}x)`;
   const rate = (label: string, amount: (run: PipelineRun) => number, name: keyof StageSeconds) => {
@@ -29,7 +29,7 @@ export function speedTable(comparison: Comparison): string {
       : []),
     ['reading, share of the whole', ...all.map(({ seconds }) => figure(seconds.reading / seconds.whole))],
     ['spots', ...all.map(({ spots }) => figure(spots))],
-    ['peak memory of the script, MB', ...all.map(({ peakMB }) => figure(peakMB))],
+    ['peak memory of the process, MB', ...all.map(({ peakMB }) => figure(peakMB))],
   ]);
 }
 

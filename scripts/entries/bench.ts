@@ -15,7 +15,6 @@ import { memoryTable, renderFrames, runMemory, type MemoryRun } from '@/scripts/
 import { makeRecording, type BenchRecording } from '@/scripts/bench/recording';
 import { accuracyTable, speedTable } from '@/scripts/bench/report';
 import { runWorkers, workersTable, type WorkersStack } from '@/scripts/bench/workers-run';
-import { openStack } from '@/stacks/open-stack';
 import type { MixedSet } from '@/tracking/simulate/mixed-scene';
 
 // Speed and accuracy on simulated recordings, beside those of a script on SciPy in the same run; what a second
@@ -25,7 +24,6 @@ import type { MixedSet } from '@/tracking/simulate/mixed-scene';
 const SEED = 1;
 const SHORT_FRAMES = { sparse: 50, dense: 20 } as const;
 const ROUNDS = 3;
-const FIRST_SET = 'sparse';
 /** 512 x 512 px of 16 bit are half a megabyte: 300 MB and 3 GB. */
 const MEMORY_FRAMES = 600;
 const MEMORY_FRAMES_LONG = 6000;
@@ -43,7 +41,7 @@ const note = (text: string) => process.stderr.write(`${text}\n`);
 const summary: string[] = [];
 
 /** The product indexes a stack once; all pipelines then read frames that are in the page cache. */
-async function indexed({ name, tiffPath }: BenchRecording) {
+async function indexed({ name, tiffPath }: BenchRecording): Promise<string> {
   const stackDir = join(folder, `${name}-indexed`);
   await mkdir(stackDir);
   const pool = new ComputePool(1, { childPath });
@@ -53,7 +51,7 @@ async function indexed({ name, tiffPath }: BenchRecording) {
   } finally {
     await pool.close();
   }
-  return openStack(stackDir);
+  return stackDir;
 }
 
 async function compareOn(set: MixedSet): Promise<BenchRecording> {
@@ -63,16 +61,13 @@ async function compareOn(set: MixedSet): Promise<BenchRecording> {
     seed: SEED,
     ...(options.quick ? { frames: SHORT_FRAMES[set] } : {}),
   });
-  const stack = await indexed(recording);
   const comparison = await comparePipelines(recording, {
-    stack,
+    stackDir: await indexed(recording),
     python,
     folder,
     rounds: options.quick ? 1 : ROUNDS,
-    fresh: set === FIRST_SET,
     note,
   });
-  await stack.close();
   const { width, height, frames } = recording;
   say(`\n${set} set: ${frames} frames of ${width} x ${height} px, seed ${SEED}\n`);
   say(speedTable(comparison));
@@ -121,7 +116,7 @@ try {
   say(
     `Beadline ${codeVersion()}, Node ${process.version}, ${cpus().length} x ${cpus()[0]?.model}, load ${load}, kernels ${chooseKernels().name}`,
   );
-  const sparse = await compareOn(FIRST_SET);
+  const sparse = await compareOn('sparse');
   await compareOn('dense');
   await compareWorkers(await demoStack());
   const { tiffPath: path, megapixels } = sparse;

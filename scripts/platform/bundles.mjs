@@ -28,6 +28,7 @@ const SOURCES = [
 /** Processes that compute are started by their path, so no import shows that these entries need them. */
 const COMPUTING = new Set(['worker', 'analyse', 'bench', 'validate']);
 const COMPUTE_CHILD = 'compute-child';
+const BENCH_CORE = 'bench-core';
 
 const entriesFolder = inRoot('scripts', 'entries');
 
@@ -53,7 +54,8 @@ export const codeVersion = () => {
 export async function ensureBundles({ names = entryNames(), say }) {
   const computes = names.some((name) => COMPUTING.has(name));
   if (computes) await ensureKernels(say);
-  const wanted = [...new Set([...names, ...(computes ? [COMPUTE_CHILD] : [])])];
+  const children = [...(computes ? [COMPUTE_CHILD] : []), ...(names.includes('bench') ? [BENCH_CORE] : [])];
+  const wanted = [...new Set([...names, ...children])];
   const hash = hashSources(ROOT, SOURCES);
   if (isCurrent(wanted, hash)) return;
   await withLock(inRoot('dist', '.bundles.lock'), async () => {
