@@ -1,13 +1,12 @@
 import { createGroupFitter } from './detection/group-fitter';
 import { JOINT_SPOTS_MOST } from './detection/fit-work';
-import { createPlainSpotFits } from './detection/plain-spot-fits';
 import { createSpotKernel } from './detection/spot-kernel';
 import { createSpotOrder } from './detection/spot-order';
 import { SpotTable } from './detection/spot-table';
 import { statedError } from './detection/stated-error';
 import { gainForLevel, levelForFalseMaxima } from './detection/threshold';
+import { createSpotFits } from './kernels/create-spot-fits';
 import { jointFitRoom } from './kernels/joint-fit-memory';
-import { createSimdSpotFits } from './kernels/joint-fit-simd';
 import type { Kernels } from './kernels/kernels';
 import { plainKernels } from './kernels/plain-kernels';
 import { blocksOfFrame } from './image-model/background-of-frame';
@@ -23,7 +22,9 @@ import {
 } from './types';
 
 /** Pixels within this many spot sizes of a spot take part in its fit. */
-const FIT_REACH_SIGMAS = 2.8;
+const FIT_REACH_SIGMAS = { full: 2.8, quick: 2.3 } as const;
+/** A step this small leaves an error far below the standard error of any spot that is found; well below it. */
+const STEP_DONE_PX = { full: 0.006, quick: 0.03 } as const;
 /** Spots closer than this are fitted together. */
 const TOGETHER_SIGMAS = 5;
 /** Spots closer than this are flagged as overlapping. */
@@ -62,7 +63,7 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
   const pixels = width * height;
   const sigma = recipe.spotSizePx;
   const readVariance = recipe.readNoise_e * recipe.readNoise_e;
-  const reach = Math.max(2, Math.ceil(FIT_REACH_SIGMAS * sigma));
+  const reach = Math.max(2, Math.ceil(FIT_REACH_SIGMAS[recipe.effort] * sigma));
   const level = levelForFalseMaxima(recipe.falseSpotsPerFrame, sigma, pixels);
   const lookTwice = recipe.effort === 'full';
 
@@ -74,11 +75,10 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
   const drift = model.backgroundDrift;
   const backgroundBlocks = new Float64Array(drift ? drift.columns * drift.rows : 0);
   const countScale = { offsetCounts, perCount: 1 / recipe.gain, saturationCounts };
-  const fitsOptions = { width, height, spotSigmaPx: sigma, readVariance, reach };
-  const fits = pictures.compiled
-    ? createSimdSpotFits(pictures.compiled, pictures.kernel, fitsOptions, room)
-    : createPlainSpotFits(pictures, fitsOptions);
-  const fitter = createGroupFitter({ ...fitsOptions, bare: pictures.bare }, fits);
+  const stepDonePx = STEP_DONE_PX[recipe.effort];
+  const fitsOptions = { width, height, spotSigmaPx: sigma, readVariance, reach, stepDonePx };
+  const fits = createSpotFits(pictures, fitsOptions, room);
+  const fitter = createGroupFitter({ ...fitsOptions, bareAt: pictures.bareAt }, fits);
   const table = new SpotTable();
   let refitted = new Uint8Array(256);
   const near = new Int32Array(64);
@@ -91,7 +91,7 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
       blocksOfFrame(drift, frameIndex, backgroundBlocks);
       pictures.paintBackground(backgroundBlocks, drift);
     }
-    pictures.toElectrons(counts, countScale);
+    pictures.setFrame(counts, countScale);
     pictures.respond(pictures.lightLevel(readVariance), readVariance);
   };
 
@@ -102,7 +102,7 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
       const at = peaks.at[k];
       const x = at % width;
       const y = (at - x) / width;
-      const noise = Math.sqrt(pictures.bare[at] + readVariance);
+      const noise = Math.sqrt(pictures.bareAt(at) + readVariance);
       const brightness = (response[at] * noise) / pictures.kernel.squares;
       table.add(x + subPixel(at, 1, x, width), y + subPixel(at, width, y, height), brightness, response[at]);
     }
@@ -138,14 +138,14 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
   const setOffsetSpread = (i: number) => {
     const x = Math.max(0, Math.min(width - 1, Math.round(table.x[i])));
     const y = Math.max(0, Math.min(height - 1, Math.round(table.y[i])));
-    fitter.setOffsetSpread(OFFSET_LEAST_E + OFFSET_SHARE * pictures.bare[y * width + x]);
+    fitter.setOffsetSpread(OFFSET_LEAST_E + OFFSET_SHARE * pictures.bareAt(y * width + x));
   };
 
   /** Twice the log-likelihood that noise at a spot's place gains as rarely as it exceeds the level. */
   const gainForNoise = (i: number): number => {
     const x = Math.max(0, Math.min(width - 1, Math.round(table.x[i])));
     const y = Math.max(0, Math.min(height - 1, Math.round(table.y[i])));
-    return gainForLevel(level, sigma, pictures.bare[y * width + x], readVariance);
+    return gainForLevel(level, sigma, pictures.bareAt(y * width + x), readVariance);
   };
 
   const fitGroups = () => {
@@ -215,7 +215,7 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
     const r = Math.ceil(2 * sigma);
     for (let j = Math.max(0, Math.round(y) - r); j <= Math.min(height - 1, Math.round(y) + r); j++) {
       for (let i = Math.max(0, Math.round(x) - r); i <= Math.min(width - 1, Math.round(x) + r); i++) {
-        if (pictures.usable[j * width + i] === 0 && badPixels[j * width + i] === 0) return true;
+        if (badPixels[j * width + i] === 0 && !pictures.isUsable(j * width + i)) return true;
       }
     }
     return false;

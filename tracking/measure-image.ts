@@ -9,24 +9,32 @@ import { findSaturation } from './image-model/saturation';
 import { measureSpotSize } from './image-model/spot-size';
 import type { Frame, ImageModel, RecipeRequest } from './types';
 
-/** Frames that the image model is measured from. */
-const MODEL_FRAMES = 32;
-/** Statistics of so many pixels are plenty, if they come from this many frames at least. */
-const MODEL_PIXELS_WANTED = 5_300_000;
-const MODEL_FRAMES_WANTED = 12;
+/**
+ * Frames that the image model is measured from, at most. Statistics of so many pixels are plenty, if they come
+ * from this many frames at least.
+ */
+const MODEL = {
+  full: { framesMost: 32, pixelsWanted: 5_300_000, framesWanted: 12 },
+  quick: { framesMost: 12, pixelsWanted: 2_100_000, framesWanted: 6 },
+} as const;
 /** The most pixels that the frames may hold together, for the sake of memory. */
 const MODEL_PIXELS_MOST = 120_000_000;
 
 /**
  * Frames to measure the image model from: pairs of neighbours spread evenly over the recording,
- * in order. Their number depends on the recording alone, so every worker picks the same.
+ * in order. Their number depends on the recording and the effort alone, so every worker picks the same.
  *
  * @param pixelsPerFrame fewer pairs are picked of large frames, for the sake of time and memory.
  */
-export function pickModelFrames(frameCount: number, pixelsPerFrame = 1): number[] {
-  const wanted = Math.max(MODEL_FRAMES_WANTED, Math.floor(MODEL_PIXELS_WANTED / pixelsPerFrame));
+export function pickModelFrames(
+  frameCount: number,
+  pixelsPerFrame = 1,
+  effort?: RecipeRequest['effort'],
+): number[] {
+  const { framesMost, pixelsWanted, framesWanted } = MODEL[effort === 'quick' ? 'quick' : 'full'];
+  const wanted = Math.max(framesWanted, Math.floor(pixelsWanted / pixelsPerFrame));
   const allowed = Math.floor(MODEL_PIXELS_MOST / pixelsPerFrame);
-  const most = Math.max(2, Math.min(MODEL_FRAMES, wanted, allowed));
+  const most = Math.max(2, Math.min(framesMost, wanted, allowed));
   if (frameCount <= most) return Array.from({ length: frameCount }, (_, i) => i);
   const pairs = Math.floor(most / 2);
   const picked: number[] = [];

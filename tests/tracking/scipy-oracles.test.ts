@@ -46,7 +46,7 @@ describe('the matched filter', () => {
   test.each(cases)('of the compiled kernels on $width x $height px is the same correlation', (one) => {
     const { width, height, sigmaPx: spotSigmaPx, noise } = one;
     const images = simdKernels().forImages({ width, height, spotSigmaPx });
-    images.toElectrons(Float32Array.from(noise), {
+    images.setFrame(Float32Array.from(noise), {
       offsetCounts: 0,
       perCount: 1,
       saturationCounts: Infinity,

@@ -34,11 +34,15 @@ export class FitWork {
   readonly information = new Float64Array(PARAMETERS_MOST * PARAMETERS_MOST);
   readonly gradient = new Float64Array(PARAMETERS_MOST);
 
-  /** @param offsetSpreadE how far the background may be off, electrons r.m.s. per pixel. */
+  /**
+   * @param offsetSpreadE how far the background may be off, electrons r.m.s. per pixel.
+   * @param stepDonePx a fit has converged when no spot moves farther than this.
+   */
   constructor(
     readonly spotSigmaPx: number,
     readonly reach: number,
     public offsetSpreadE: number,
+    readonly stepDonePx: number,
   ) {
     this.side = 2 * reach + 1;
     const room = JOINT_SPOTS_MOST * this.side;

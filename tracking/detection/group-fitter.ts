@@ -10,8 +10,8 @@ export interface GroupFitterOptions {
   height: number;
   spotSigmaPx: number;
   readVariance: number;
-  /** Expected light without spots of the frame at hand, electrons. */
-  bare: Float32Array;
+  /** Expected light without spots of a pixel of the frame at hand, electrons. */
+  bareAt(pixel: number): number;
 }
 
 /** A spot of a group whose brightness is not this many standard errors above 0 is dropped. */
@@ -50,7 +50,7 @@ export interface GroupFitter {
 }
 
 export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits): GroupFitter {
-  const { width, height, spotSigmaPx, readVariance, bare } = options;
+  const { width, height, spotSigmaPx, readVariance, bareAt } = options;
   const { squares } = createSpotKernel(spotSigmaPx);
   const bestX = new Float64Array(JOINT_SPOTS_MOST);
   const bestY = new Float64Array(JOINT_SPOTS_MOST);
@@ -69,7 +69,7 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
   const responseTo = (xPx: number, yPx: number, brightnessE: number) => {
     const x = Math.max(0, Math.min(width - 1, Math.round(xPx)));
     const y = Math.max(0, Math.min(height - 1, Math.round(yPx)));
-    return (brightnessE * squares) / Math.sqrt(bare[y * width + x] + readVariance + DARK_VARIANCE_E2);
+    return (brightnessE * squares) / Math.sqrt(bareAt(y * width + x) + readVariance + DARK_VARIANCE_E2);
   };
 
   const start = (table: SpotTable, members: Int32Array, count: number) => {

@@ -5,9 +5,8 @@ import type { FitWindow } from './fit-window';
 import { FitWork, JOINT_SPOTS_MOST, PARAMETERS_MOST } from './fit-work';
 
 const ITERATIONS_MOST = 25;
-/** A step this small leaves an error far below the standard error of any spot that is found. */
-const STEP_DONE_PX = 0.006;
-const STEP_DONE_BRIGHTNESS = 0.003;
+/** Relative change of brightness that counts as little as a step of one pixel. */
+const STEP_DONE_BRIGHTNESS_PER_PX = 0.5;
 /** Neighbours creep towards their places in small steps: theirs must be smaller by this. */
 const STEP_DONE_TOGETHER = 0.25;
 /** Likelihoods that differ by less are equal: that of compiled fits is known to about this. */
@@ -139,15 +138,15 @@ export class JointFit extends FitWork {
   /** Applies the step, shortened where it would leap; true when nothing moved to speak of. */
   private move(): boolean {
     const most = STEP_MOST_SIGMAS * this.spotSigmaPx;
-    const small = this.count > 1 ? STEP_DONE_TOGETHER : 1;
+    const small = this.count > 1 ? STEP_DONE_TOGETHER * this.stepDonePx : this.stepDonePx;
     let done = true;
     this.offset += this.step[0];
     for (let s = 0; s < this.count; s++) {
       const dx = Math.max(-most, Math.min(most, this.step[3 * s + 1]));
       const dy = Math.max(-most, Math.min(most, this.step[3 * s + 2]));
       const n = Math.max(BRIGHTNESS_LEAST, BRIGHTNESS_KEPT * this.n[s], this.n[s] + this.step[3 * s + 3]);
-      if (Math.abs(dx) > small * STEP_DONE_PX || Math.abs(dy) > small * STEP_DONE_PX) done = false;
-      if (Math.abs(n - this.n[s]) > small * STEP_DONE_BRIGHTNESS * n) done = false;
+      if (Math.abs(dx) > small || Math.abs(dy) > small) done = false;
+      if (Math.abs(n - this.n[s]) > STEP_DONE_BRIGHTNESS_PER_PX * small * n) done = false;
       this.x[s] = Math.max(this.boxX[s], Math.min(this.boxX[s] + this.side - 1, this.x[s] + dx));
       this.y[s] = Math.max(this.boxY[s], Math.min(this.boxY[s] + this.side - 1, this.y[s] + dy));
       this.n[s] = n;

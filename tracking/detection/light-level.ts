@@ -1,7 +1,7 @@
 import { nthElement } from '../image-model/nth-element';
 
 /** About so many pixels are looked at, evenly spread. */
-const SAMPLES = 20_000;
+const SAMPLES = 8000;
 /** About so many of those tell where the rounds start, which need not be exact. */
 const START_SAMPLES = 1000;
 const CLIP_SIGMAS = 2.5;

@@ -1,4 +1,4 @@
-import type { FramePlanes } from '../kernels/kernels';
+import type { PlainPlanes } from '../kernels/kernels';
 import { measureElongation, type Elongation } from './elongation';
 import { FitWindow } from './fit-window';
 import { JOINT_SPOTS_MOST } from './fit-work';
@@ -15,14 +15,16 @@ export interface SpotFitsOptions {
   readVariance: number;
   /** Boxes of pixels around spots reach so many pixels each way. */
   reach: number;
+  /** A fit has converged when no spot moves farther than this, px. */
+  stepDonePx: number;
 }
 
 /** Joint fits in plain TypeScript, double precision: the oracle of the compiled ones. */
-export function createPlainSpotFits(planes: FramePlanes, options: SpotFitsOptions): SpotFits {
-  const { width, height, spotSigmaPx, readVariance, reach } = options;
+export function createPlainSpotFits(planes: PlainPlanes, options: SpotFitsOptions): SpotFits {
+  const { width, height, spotSigmaPx, readVariance, reach, stepDonePx } = options;
   const { electrons, usable, bare, model } = planes;
   const window = new FitWindow();
-  const joint = new JointFit(spotSigmaPx, reach, 1);
+  const joint = new JointFit(spotSigmaPx, reach, 1, stepDonePx);
   const painter = createSpotPainter(width, height, spotSigmaPx, reach);
   const secondLook = createSecondLook(spotSigmaPx, readVariance);
   const centreX = new Float64Array(JOINT_SPOTS_MOST);

@@ -21,9 +21,10 @@ export function createSimdSpotFits(
   const { buffer } = simd.memory;
   const tapsAt = simd.setUpJointFit(
     fit,
-    planes.electronsAt,
-    planes.usableAt,
-    planes.bareAt,
+    planes.factsAt,
+    planes.countsAt,
+    planes.badAt,
+    planes.backgroundAt,
     planes.modelAt,
     options.width,
     options.height,
@@ -32,6 +33,7 @@ export function createSimdSpotFits(
     kernel.reach,
     options.spotSigmaPx,
     options.readVariance,
+    options.stepDonePx,
   );
   new Float32Array(buffer, tapsAt, kernel.reach + 1).set(kernel.weight);
   const shared = (name: (typeof SHARED_ARRAYS)[number]) =>

@@ -45,37 +45,49 @@ export interface FramePlanes {
   readonly bad: Uint8Array;
   /** Filled by the caller, for all frames or for each: light without spots of the whole stack, electrons. */
   readonly background: Float32Array;
-  readonly electrons: Float32Array;
-  /** 1 where a pixel counts; 0 where it is bad, holds no number or is saturated. */
-  readonly usable: Uint8Array;
-  /** Expected light without spots, electrons >= 0. */
-  readonly bare: Float32Array;
-  /** Starts as `bare`; whoever knows of spots adds their light. */
+  /** Starts as the expected light without spots, electrons; whoever knows of spots adds their light. */
   readonly model: Float32Array;
   /** Noise of variance 1 in which a spot stands out the most. */
   readonly response: Float32Array;
+  /** Expected light of a pixel without spots, electrons >= 0; known once there is a response. */
+  bareAt(pixel: number): number;
+  /** Whether a pixel counts; not where it is bad, holds no number or is saturated. */
+  isUsable(pixel: number): boolean;
 }
 
-/** Operations on frames of one size. Each frame goes through them in this order; the background may stay. */
+/** What the plain kernels write down, where the compiled ones work it out from the counts when it is needed. */
+export interface PlainPlanes {
+  readonly electrons: Float32Array;
+  /** 1 where a pixel counts. */
+  readonly usable: Uint8Array;
+  readonly bare: Float32Array;
+  readonly model: Float32Array;
+}
+
+/**
+ * Operations on frames of one size. Each frame goes through them in this order; the background may stay.
+ * Either `compiled` or `plain` is there for the fits to work in.
+ */
 export interface FrameKernels extends FramePlanes {
   readonly width: number;
   readonly height: number;
   readonly kernel: SpotKernel;
-  /** Where compiled kernels find the planes; null when there are none and the plain ones do the work. */
   readonly compiled: CompiledPlanes | null;
+  readonly plain: PlainPlanes | null;
   /**
    * Fills `background` along straight lines between the middles of blocks, nowhere below 0.
    *
    * @param blocks electrons, row by row
    */
   paintBackground(blocks: Float64Array, grid: { columns: number; rows: number }): void;
-  /** Fills `electrons` and `usable`. Pixels that are bad or hold no finite number get 0 electrons. */
-  toElectrons(counts: Float32Array, scale: CountScale): void;
+  /** Takes a frame in; the counts are copied. */
+  setFrame(counts: Float32Array, scale: CountScale): void;
   /** Light of the frame relative to `background`; see `measureLightLevel`. */
   lightLevel(readVariance: number): LightLevel;
   /**
-   * Fills `bare`, max(0, scale * background + shift), and `model`; then `response`, the frame in units of
-   * its own noise correlated with the spot. Bad pixels count as dark, saturated ones as bright as they look.
+   * Fills `model` with the expected light without spots, max(0, scale * background + shift), and `response`,
+   * the frame in units of its own noise correlated with the spot. Bad pixels count as dark, saturated ones as
+   * bright as they look.
    */
   respond(light: LightLevel, readVariance: number): void;
   /**
@@ -88,11 +100,11 @@ export interface FrameKernels extends FramePlanes {
 /** Byte addresses in the memory of an instance of the compiled kernels. */
 export interface CompiledPlanes {
   readonly exports: SimdExports;
-  readonly electronsAt: number;
-  readonly usableAt: number;
-  readonly bareAt: number;
+  readonly factsAt: number;
+  readonly countsAt: number;
+  readonly badAt: number;
+  readonly backgroundAt: number;
   readonly modelAt: number;
-  readonly responseAt: number;
   /** `scratchBytes` of the spec, on a multiple of 16. */
   readonly scratchAt: number;
 }

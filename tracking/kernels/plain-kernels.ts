@@ -3,7 +3,7 @@ import { createMatchedFilter, findPeaks } from '../detection/matched-filter';
 import { DARK_VARIANCE_E2 } from '../detection/second-look';
 import { paintBlocks } from '../image-model/block-grid';
 import type { FrameKernels, ImageSpec, Kernels, Peaks } from './kernels';
-import { saturationElectrons } from './noise-units';
+import { electronScale, electronsOf } from './noise-units';
 
 /** The kernels in plain TypeScript: oracle of the compiled ones, and what computes where those can't run. */
 export const plainKernels: Kernels = { name: 'plain', forImages };
@@ -28,13 +28,11 @@ function forImages({ width, height, spotSigmaPx }: ImageSpec): FrameKernels {
     for (let i = 0; i < pixels; i++) if (background[i] < 0) background[i] = 0;
   };
 
-  const toElectrons: FrameKernels['toElectrons'] = (counts, scale) => {
-    // Rounded to 32 bits on the way, as vectors do it, so that both sets agree on what is saturated.
-    const offset = Math.fround(scale.offsetCounts);
-    const perCount = Math.fround(scale.perCount);
-    saturationE = saturationElectrons(scale);
+  const setFrame: FrameKernels['setFrame'] = (counts, countScale) => {
+    const scale = electronScale(countScale);
+    saturationE = scale.saturationE;
     for (let i = 0; i < pixels; i++) {
-      const e = Math.fround(Math.fround(counts[i] - offset) * perCount);
+      const e = electronsOf(counts[i], scale);
       const good = bad[i] === 0 && e - e === 0;
       electrons[i] = good ? e : 0;
       // A saturated pixel shows that there is light, but not how much.
@@ -64,15 +62,15 @@ function forImages({ width, height, spotSigmaPx }: ImageSpec): FrameKernels {
     height,
     kernel: filter.kernel,
     compiled: null,
+    plain: { electrons, usable, bare, model },
     bad,
     background,
-    electrons,
-    usable,
-    bare,
     model,
     response,
+    bareAt: (pixel) => bare[pixel],
+    isUsable: (pixel) => usable[pixel] === 1,
     paintBackground,
-    toElectrons,
+    setFrame,
     lightLevel: (readVariance) => measureLightLevel(electrons, background, usable, readVariance),
     respond,
     findPeaks: find,

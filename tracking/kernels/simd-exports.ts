@@ -9,22 +9,12 @@ export interface SimdExports {
   memory: SimdMemory;
   /** First byte that the module doesn't use itself. */
   heapBase(): number;
-  toElectrons(
-    counts: number,
-    bad: number,
-    electrons: number,
-    usable: number,
-    pixels: number,
-    offset: number,
-    perCount: number,
-    saturation: number,
-  ): void;
   mixRows(top: number, bottom: number, share: number, out: number, pixels: number): void;
   respond(
-    electrons: number,
-    usable: number,
+    facts: number,
+    counts: number,
+    bad: number,
     background: number,
-    bare: number,
     model: number,
     response: number,
     width: number,
@@ -37,18 +27,23 @@ export interface SimdExports {
     reach: number,
     correctionX: number,
     correctionY: number,
+    offset: number,
+    perCount: number,
+    saturation: number,
     scale: number,
     shift: number,
     floor: number,
-    saturation: number,
   ): void;
   findPeaks(response: number, width: number, height: number, level: number, peaks: number): number;
   gatherLight(
-    electrons: number,
+    counts: number,
+    bad: number,
     background: number,
-    usable: number,
     pixels: number,
     stride: number,
+    offset: number,
+    perCount: number,
+    saturation: number,
     electronsOut: number,
     backgroundOut: number,
   ): number;
@@ -64,9 +59,10 @@ export interface SimdExports {
   ): void;
   setUpJointFit(
     fit: number,
-    electrons: number,
-    usable: number,
-    bare: number,
+    facts: number,
+    counts: number,
+    bad: number,
+    background: number,
     model: number,
     imageWidth: number,
     imageHeight: number,
@@ -75,6 +71,7 @@ export interface SimdExports {
     tapReach: number,
     sigma: number,
     readVariance: number,
+    stepDone: number,
   ): number;
   paintSpot(fit: number, x: number, y: number, brightness: number): void;
   loadJointFitWindow(fit: number, count: number): void;

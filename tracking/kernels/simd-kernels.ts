@@ -1,8 +1,9 @@
+import type { LightLevel } from '../detection/light-level';
 import { DARK_VARIANCE_E2 } from '../detection/second-look';
 import { createSpotKernel, edgeCorrection } from '../detection/spot-kernel';
 import { Arena } from './arena';
 import type { FrameKernels, ImageSpec, Kernels, Peaks } from './kernels';
-import { saturationElectrons } from './noise-units';
+import { electronScale, electronsOf, type ElectronScale } from './noise-units';
 import { plainKernels } from './plain-kernels';
 import type { InstantiateSimd, SimdExports } from './simd-exports';
 import { createSimdBackground } from './simd-background';
@@ -31,33 +32,34 @@ function simdImages(spec: ImageSpec, instantiate: InstantiateSimd): FrameKernels
   arena.floats(at.weights, reach + 1).set(kernel.weight);
   arena.floats(at.correctionX, width).set(edgeCorrection(kernel, width));
   arena.floats(at.correctionY, height).set(edgeCorrection(kernel, height));
-  const electrons = arena.floats(at.electrons, pixels);
-  const response = arena.floats(at.response, pixels);
+  const counts = arena.floats(at.counts, pixels);
+  const bad = arena.bytes(at.bad, pixels);
+  const background = arena.floats(at.background, pixels);
   const peaks: Peaks = { count: 0, at: arena.integers(at.peaks, at.peaksMost) };
-  let saturationE = Infinity;
+  const lightOf = createSimdLight(simd, arena, at, pixels);
+  let electrons: ElectronScale = { offset: 0, perCount: 1, saturationE: Infinity };
+  let frameLight: LightLevel = { scale: 1, shift: 0 };
 
-  const toElectrons: FrameKernels['toElectrons'] = (counts, scale) => {
-    const { offsetCounts, perCount } = scale;
-    saturationE = saturationElectrons(scale);
-    response.set(counts);
-    simd.toElectrons(
-      at.response,
-      at.bad,
-      at.electrons,
-      at.usable,
-      pixels,
-      offsetCounts,
-      perCount,
-      saturationE,
-    );
+  const setFrame: FrameKernels['setFrame'] = (from, scale) => {
+    electrons = electronScale(scale);
+    counts.set(from);
   };
 
-  const respond: FrameKernels['respond'] = ({ scale, shift }, readVariance) => {
+  const isUsable: FrameKernels['isUsable'] = (pixel) => {
+    const e = electronsOf(counts[pixel], electrons);
+    return bad[pixel] === 0 && e - e === 0 && e < electrons.saturationE;
+  };
+
+  const bareAt: FrameKernels['bareAt'] = (pixel) =>
+    Math.max(0, frameLight.scale * background[pixel] + frameLight.shift);
+
+  const respond: FrameKernels['respond'] = (light, readVariance) => {
+    frameLight = light;
     simd.respond(
-      at.electrons,
-      at.usable,
+      at.facts,
+      at.counts,
+      at.bad,
       at.background,
-      at.bare,
       at.model,
       at.response,
       width,
@@ -70,10 +72,12 @@ function simdImages(spec: ImageSpec, instantiate: InstantiateSimd): FrameKernels
       reach,
       at.correctionX,
       at.correctionY,
-      scale,
-      shift,
+      electrons.offset,
+      electrons.perCount,
+      electrons.saturationE,
+      light.scale,
+      light.shift,
       readVariance + DARK_VARIANCE_E2,
-      saturationE,
     );
   };
 
@@ -88,23 +92,23 @@ function simdImages(spec: ImageSpec, instantiate: InstantiateSimd): FrameKernels
     kernel,
     compiled: {
       exports: simd,
-      electronsAt: at.electrons,
-      usableAt: at.usable,
-      bareAt: at.bare,
+      factsAt: at.facts,
+      countsAt: at.counts,
+      badAt: at.bad,
+      backgroundAt: at.background,
       modelAt: at.model,
-      responseAt: at.response,
       scratchAt: at.scratch,
     },
-    bad: arena.bytes(at.bad, pixels),
-    background: arena.floats(at.background, pixels),
-    electrons,
-    usable: arena.bytes(at.usable, pixels),
-    bare: arena.floats(at.bare, pixels),
+    plain: null,
+    bad,
+    background,
     model: arena.floats(at.model, pixels),
-    response,
+    response: arena.floats(at.response, pixels),
+    bareAt,
+    isUsable,
     paintBackground: createSimdBackground(simd, arena, at, width, height),
-    toElectrons,
-    lightLevel: createSimdLight(simd, arena, at, pixels),
+    setFrame,
+    lightLevel: (readVariance) => lightOf(electrons, readVariance),
     respond,
     findPeaks,
   };

@@ -2,6 +2,7 @@ import { levelOfSamples, lightStride, type LightLevel, type LightSums } from '..
 import type { Arena } from './arena';
 import type { SimdExports } from './simd-exports';
 import type { SimdPlanes } from './simd-planes';
+import type { ElectronScale } from './noise-units';
 
 /** Light level of the frame in an instance's memory, as `measureLightLevel` finds it. */
 export function createSimdLight(
@@ -9,7 +10,7 @@ export function createSimdLight(
   arena: Arena,
   at: SimdPlanes,
   pixels: number,
-): (readVariance: number) => LightLevel {
+): (scale: ElectronScale, readVariance: number) => LightLevel {
   const samples = {
     count: 0,
     electrons: arena.floats(at.lightElectrons, at.lightMost),
@@ -22,13 +23,16 @@ export function createSimdLight(
     simd.lightSums(lightElectrons, lightBackground, count, scale, shift, readVariance, clip, at.lightSums);
     return { light: found[0], expected: found[1], kept: found[2] };
   };
-  return (readVariance) => {
+  return ({ offset, perCount, saturationE }, readVariance) => {
     samples.count = simd.gatherLight(
-      at.electrons,
+      at.counts,
+      at.bad,
       at.background,
-      at.usable,
       pixels,
       lightStride(pixels),
+      offset,
+      perCount,
+      saturationE,
       lightElectrons,
       lightBackground,
     );

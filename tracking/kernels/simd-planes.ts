@@ -3,6 +3,8 @@ import type { Arena } from './arena';
 
 /** Kernels work on 16 pixels at a time and may write so many bytes behind a plane's last pixel. */
 const SLACK_BYTES = 64;
+/** Numbers in `FrameFacts`. */
+const FACTS = 5;
 /** Rows that are correlated before the next ones are fetched: few enough to stay in the cache. */
 const BAND_ROWS = 32;
 
@@ -10,12 +12,11 @@ const BAND_ROWS = 32;
 export interface SimdPlanes {
   bad: number;
   background: number;
-  electrons: number;
-  usable: number;
-  bare: number;
+  counts: number;
   model: number;
-  /** Holds the counts of a frame too, which nobody needs once there is a response. */
   response: number;
+  /** f32, see `FrameFacts` in `assembly/counts.ts`. */
+  facts: number;
   /** i32, room for a peak in every block of 2 x 2 pixels, which is as many as there can be. */
   peaks: number;
   peaksMost: number;
@@ -61,11 +62,10 @@ export function reservePlanes(
   return {
     bad: bytes(pixels),
     background: floats(pixels),
-    electrons: floats(pixels),
-    usable: bytes(pixels),
-    bare: floats(pixels),
+    counts: floats(pixels),
     model: floats(pixels),
     response: floats(pixels),
+    facts: floats(FACTS),
     peaks: floats(peaksMost),
     peaksMost,
     lightElectrons: floats(lightMost),

@@ -31,7 +31,7 @@ export interface FalseSpotsOptions {
 /** Measures camera and background of a recording of noise, then counts what detection finds in it. */
 export function falseSpots(kind: NoiseKind, wanted: number, options: FalseSpotsOptions): FalseSpotsRow {
   const { spotsLeast, seed, effort = 'full' } = options;
-  const picked = pickModelFrames(NOISE_FRAMES, NOISE_SIDE_PX * NOISE_SIDE_PX);
+  const picked = pickModelFrames(NOISE_FRAMES, NOISE_SIDE_PX * NOISE_SIDE_PX, effort);
   const request = { spotSizePx: kind.spotSigmaPx, falseSpotsPerFrame: wanted, effort };
   const model = measureImage(
     picked.map((frame) => noiseFrame(kind, frame, seed)),

@@ -28,7 +28,7 @@ export async function modelOf(
   pixelSizeM: number,
   { onProgress }: WorkContext,
 ): Promise<{ model: ImageModel; recipe: Recipe }> {
-  const picked = pickModelFrames(stack.frames, stack.width * stack.height);
+  const picked = pickModelFrames(stack.frames, stack.width * stack.height, request.effort);
   const frames: Frame[] = [];
   for (const frame of picked) {
     frames.push(await stack.readFrame(frame));

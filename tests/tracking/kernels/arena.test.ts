@@ -44,12 +44,12 @@ test('images that find no room in an instance are left to the plain kernels', ()
     const frame = createSimdKernels(make).forImages({ width: 100, height: 100, spotSigmaPx: 1.2 });
     expect(frame.compiled).toBeNull();
     frame.background.fill(10);
-    frame.toElectrons(new Float32Array(10_000).fill(120), {
+    frame.setFrame(new Float32Array(10_000).fill(120), {
       offsetCounts: 100,
       perCount: 0.5,
       saturationCounts: Infinity,
     });
-    expect(frame.electrons.every((e) => e === 10)).toBe(true);
+    expect(frame.plain!.electrons.every((e) => e === 10)).toBe(true);
   }
 });
 

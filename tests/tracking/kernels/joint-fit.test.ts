@@ -1,10 +1,9 @@
 import { describe, expect, test } from 'vitest';
 import { simdKernels } from '@/tests/helpers/simd-kernels';
-import { createPlainSpotFits } from '@/tracking/detection/plain-spot-fits';
 import type { SpotFits } from '@/tracking/detection/spot-fits';
 import { createSpotPainter } from '@/tracking/detection/spot-painter';
 import { jointFitRoom } from '@/tracking/kernels/joint-fit-memory';
-import { createSimdSpotFits } from '@/tracking/kernels/joint-fit-simd';
+import { createSpotFits } from '@/tracking/kernels/create-spot-fits';
 import type { FrameKernels } from '@/tracking/kernels/kernels';
 import { plainKernels } from '@/tracking/kernels/plain-kernels';
 import { createRandom, type Random } from '@/tracking/random';
@@ -35,26 +34,25 @@ function both(width: number, height: number, spotSigmaPx = 1.2): Both {
   const tapReach = plainKernels.forImages({ width, height, spotSigmaPx }).kernel.reach;
   const room = jointFitRoom(reach, tapReach, 5 * spotSigmaPx);
   const spec = { width, height, spotSigmaPx, scratchBytes: room.bytes };
-  const planes: FrameKernels[] = [plainKernels.forImages(spec), kernels.forImages(spec)];
-  const options = { width, height, spotSigmaPx, readVariance: READ_VARIANCE, reach };
-  const { compiled, kernel } = planes[1];
-  if (!compiled) throw new Error('The compiled kernels have no memory for images this small.');
+  const frames: FrameKernels[] = [plainKernels.forImages(spec), kernels.forImages(spec)];
+  const options = { width, height, spotSigmaPx, readVariance: READ_VARIANCE, reach, stepDonePx: 0.006 };
+  if (!frames[1].compiled) throw new Error('The compiled kernels have no memory for images this small.');
   const painter = createSpotPainter(width, height, spotSigmaPx, Math.ceil(5 * spotSigmaPx));
   return {
-    plain: createPlainSpotFits(planes[0], options),
-    simd: createSimdSpotFits(compiled, kernel, options, room),
+    plain: createSpotFits(frames[0], options, room),
+    simd: createSpotFits(frames[1], options, room),
     show(spots, random, uselessShare = 0) {
       const light = new Float32Array(width * height).fill(BACKGROUND_E);
       for (const { x, y, n } of spots) painter.paint(light, x, y, n);
-      for (let i = 0; i < light.length; i++) {
-        const electrons = random.poisson(light[i]) + Math.sqrt(READ_VARIANCE) * random.normal();
-        const useless = random.uniform() < uselessShare;
-        for (const plane of planes) {
-          plane.electrons[i] = useless ? 0 : electrons;
-          plane.usable[i] = useless ? 0 : 1;
-          plane.bare[i] = BACKGROUND_E;
-          plane.model[i] = BACKGROUND_E;
-        }
+      // What the compiled kernels work out from counts are numbers of 32 bits.
+      const counts = Float32Array.from(light, (expected) => {
+        const electrons = random.poisson(expected) + Math.sqrt(READ_VARIANCE) * random.normal();
+        return random.uniform() < uselessShare ? Number.NaN : electrons;
+      });
+      for (const frame of frames) {
+        frame.background.fill(BACKGROUND_E);
+        frame.setFrame(counts, { offsetCounts: 0, perCount: 1, saturationCounts: Infinity });
+        frame.respond({ scale: 1, shift: 0 }, READ_VARIANCE);
       }
     },
   };

@@ -12,7 +12,6 @@ export { setUpJointFit } from './joint-fit-set-up';
 export { gatherLight, lightSums } from './light-sums';
 export { mixRows } from './mix-rows';
 export { respond } from './respond';
-export { toElectrons } from './to-electrons';
 
 /** First byte that the module itself doesn't use. */
 export function heapBase(): usize {

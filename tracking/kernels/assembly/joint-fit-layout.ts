@@ -1,6 +1,8 @@
 // Memory of the joint fit, from the address `fit` on. `tracking/kernels/joint-fit-memory.ts` lays it out
 // the same way for the callers.
 
+import { FrameFacts } from './counts';
+
 /** Most spots fitted at once, and the parameters that they have: offset, then x, y, brightness of each. */
 export const SPOTS_MOST: i32 = 6;
 export const PARAMETERS_MOST: i32 = 19;
@@ -38,9 +40,9 @@ export const SHARES: usize = 7296;
 @unmanaged
 export class Settings {
   // Planes of the image: f32, u8, f32, f32 per pixel.
-  electrons: usize = 0;
-  usable: usize = 0;
-  bare: usize = 0;
+  counts: usize = 0;
+  bad: usize = 0;
+  background: usize = 0;
   model: usize = 0;
   imageWidth: i32 = 0;
   imageHeight: i32 = 0;
@@ -70,8 +72,11 @@ export class Settings {
   tapReach: i32 = 0;
   sigma: f64 = 0;
   readVariance: f64 = 0;
+  /** A fit has converged when no spot moves farther than this, px. */
+  stepDone: f64 = 0;
   offset: f64 = 0;
   offsetSpread: f64 = 0;
+  facts: FrameFacts = changetype<FrameFacts>(0);
 }
 
 export function settingsOf(fit: usize): Settings {

@@ -1,3 +1,4 @@
+import { lightAt } from './counts';
 import { PEAK, settingsOf, Settings } from './joint-fit-layout';
 import { placeBoxes } from './joint-fit';
 import { paintExpected, shareJointFit } from './joint-fit-expectation';
@@ -16,8 +17,7 @@ const DARK_VARIANCE: f32 = 1e-3;
 export function peakOfResidual(fit: usize, squares: f64): void {
   const s = settingsOf(fit);
   // As the spots are painted: in boxes around where they are now.
-  placeBoxes(fit, s, s.count);
-  shareJointFit(fit, s.count);
+  if (placeBoxes(fit, s, s.count)) shareJointFit(fit, s.count);
   paintExpected(fit, s.count, 0);
   writeNoise(s);
   correlateRows(s);
@@ -69,6 +69,8 @@ function writeNoise(s: Settings): void {
   const margin = (<usize>s.tapReach) << 2;
   const length = noiseStride(s);
   const shift = f32x4.splat(<f32>s.readVariance);
+  const scale = f32x4.splat(s.facts.scale);
+  const dim = f32x4.splat(s.facts.shift);
   for (let y: i32 = 0; y < s.height; y++) {
     const row = (<usize>(y * s.stride)) << 2;
     const out = s.noise + ((<usize>(y * length)) << 2);
@@ -77,7 +79,7 @@ function writeNoise(s: Settings): void {
     for (let x: i32 = 0; x < s.stride; x += 4) {
       const at = (<usize>x) << 2;
       const expected = v128.load(s.weight + row + at);
-      const spots = f32x4.sub(f32x4.sub(expected, shift), v128.load(s.bare + from + at));
+      const spots = f32x4.sub(f32x4.sub(expected, shift), lightAt(s.background + from + at, scale, dim));
       const doubt = f32x4.mul(spots, f32x4.splat(SHAPE_ERROR));
       const variance = f32x4.pmax(f32x4.splat(DARK_VARIANCE), f32x4.add(expected, f32x4.mul(doubt, doubt)));
       const excess = f32x4.sub(v128.load(s.data + row + at), expected);

@@ -1,18 +1,20 @@
+import { FrameFacts } from './counts';
 import { SPOTS_MOST, settingsOf, shareAt } from './joint-fit-layout';
 
 /**
  * Tells the joint fits whose memory starts at `fit` (zeros so far) which image they work on.
  *
- * @param electrons, usable, bare, model addresses of the planes
+ * @param facts address of `FrameFacts` @param counts, bad, background, model addresses of the planes
  * @param reach boxes have 2 reach + 1 columns and rows @param windowMost columns and rows that a window has at most, a multiple of 4
  * @param tapReach the residual filter has taps at distance 0 .. tapReach
  * @returns address of the taps, f32, for the caller to fill.
  */
 export function setUpJointFit(
   fit: usize,
-  electrons: usize,
-  usable: usize,
-  bare: usize,
+  facts: usize,
+  counts: usize,
+  bad: usize,
+  background: usize,
   model: usize,
   imageWidth: i32,
   imageHeight: i32,
@@ -21,11 +23,13 @@ export function setUpJointFit(
   tapReach: i32,
   sigma: f64,
   readVariance: f64,
+  stepDone: f64,
 ): usize {
   const s = settingsOf(fit);
-  s.electrons = electrons;
-  s.usable = usable;
-  s.bare = bare;
+  s.facts = changetype<FrameFacts>(facts);
+  s.counts = counts;
+  s.bad = bad;
+  s.background = background;
   s.model = model;
   s.imageWidth = imageWidth;
   s.imageHeight = imageHeight;
@@ -36,6 +40,7 @@ export function setUpJointFit(
   s.tapReach = tapReach;
   s.sigma = sigma;
   s.readVariance = readVariance;
+  s.stepDone = stepDone;
   // Fitted spots, and one more that is painted.
   s.taps = shareAt(fit, s.shareRoom, SPOTS_MOST + 1, 0);
   // Boxes may stand beside the window: what is read there must belong to nobody else.

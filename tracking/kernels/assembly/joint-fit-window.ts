@@ -1,3 +1,4 @@
+import { electronsAt, goodAt } from './counts';
 import { CENTRE_X, CENTRE_Y, settingsOf, Settings } from './joint-fit-layout';
 
 export function roundPx(value: f64): i32 {
@@ -31,7 +32,10 @@ export function loadJointFitWindow(fit: usize, count: i32): void {
   s.stride = (s.width + 3) & ~3;
   if (count > 1) markBoxes(fit, s, count);
   const shift = f32x4.splat(<f32>s.readVariance);
-  const zero = i32x4.splat(0);
+  const facts = s.facts;
+  const offset = f32x4.splat(facts.offset);
+  const perCount = f32x4.splat(facts.perCount);
+  const saturation = f32x4.splat(facts.saturation);
   const width = i32x4.splat(s.width);
   const all = count === 1;
   for (let y: i32 = 0; y < s.height; y++) {
@@ -40,10 +44,12 @@ export function loadJointFitWindow(fit: usize, count: i32): void {
     let place = i32x4(0, 1, 2, 3);
     for (let x: usize = 0; x < <usize>s.stride; x += 4) {
       const at = row + (x << 2);
-      v128.store(s.data + at, f32x4.add(v128.load(s.electrons + ((from + x) << 2)), shift));
+      const e = electronsAt(s.counts + ((from + x) << 2), offset, perCount);
+      const good = goodAt(s.bad + from + x, e);
+      // What can't be used must be a number all the same: it is multiplied by 0.
+      v128.store(s.data + at, f32x4.add(v128.and(e, good), shift));
       v128.store(s.fixed + at, f32x4.add(v128.load(s.model + ((from + x) << 2)), shift));
-      const marks = i32x4.extend_low_i16x8_u(i16x8.extend_low_i8x16_u(v128.load32_zero(s.usable + from + x)));
-      const usable = v128.andnot(i32x4.gt_s(width, place), i32x4.eq(marks, zero));
+      const usable = v128.and(v128.and(good, f32x4.lt(e, saturation)), i32x4.gt_s(width, place));
       v128.store(s.used + at, all ? usable : v128.and(usable, v128.load(s.used + at)));
       place = i32x4.add(place, i32x4.splat(4));
     }

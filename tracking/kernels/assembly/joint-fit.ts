@@ -25,8 +25,7 @@ import { roundPx } from './joint-fit-window';
 
 // The same as in `tracking/detection/joint-fit.ts`, which says why.
 const ITERATIONS_MOST: i32 = 25;
-const STEP_DONE_PX: f64 = 0.006;
-const STEP_DONE_BRIGHTNESS: f64 = 0.003;
+const STEP_DONE_BRIGHTNESS_PER_PX: f64 = 0.5;
 const STEP_DONE_TOGETHER: f64 = 0.25;
 const STEP_MOST_SIGMAS: f64 = 0.6;
 const BRIGHTNESS_KEPT: f64 = 0.25;
@@ -82,10 +81,14 @@ export function runJointFit(fit: usize, count: i32, offsetSpread: f64): i32 {
   return converged;
 }
 
-/** Log-likelihood of the fit's values, up to a constant that depends on the window's data alone. */
+/**
+ * Log-likelihood of the fit made last, up to a constant that depends on the window's data alone. Its shares
+ * are still those of its values; the weights are spoilt.
+ */
 export function jointFitLikelihood(fit: usize): f64 {
   const s = settingsOf(fit);
-  return expectJointFit(fit, s, true);
+  paintExpected(fit, s.count, <f32>s.offset);
+  return likelihoodOfExpected(fit);
 }
 
 function expectJointFit(fit: usize, s: Settings, wanted: bool): f64 {
@@ -96,16 +99,27 @@ function expectJointFit(fit: usize, s: Settings, wanted: bool): f64 {
   return likelihood;
 }
 
-/** First column and row of each spot's box in the window; a box that misses the window stands beside it. */
-export function placeBoxes(fit: usize, s: Settings, count: i32): void {
+/**
+ * First column and row of each spot's box in the window; a box that misses the window stands beside it.
+ *
+ * @returns whether any box has moved.
+ */
+export function placeBoxes(fit: usize, s: Settings, count: i32): bool {
+  let moved = false;
   for (let i: i32 = 0; i < count; i++) {
     const at = (<usize>i) << 3;
     const x = roundPx(load<f64>(fit + X + at)) - s.reach - s.x0;
     const y = roundPx(load<f64>(fit + Y + at)) - s.reach - s.y0;
-    store<i32>(fit + BOX_X + ((<usize>i) << 2), max(-s.side, min(s.width, x)));
-    store<i32>(fit + BOX_Y + ((<usize>i) << 2), max(-s.side, min(s.height, y)));
+    const boxX = fit + BOX_X + ((<usize>i) << 2);
+    const boxY = fit + BOX_Y + ((<usize>i) << 2);
+    const left = max(-s.side, min(s.width, x));
+    const top = max(-s.side, min(s.height, y));
+    moved = moved || load<i32>(boxX) !== left || load<i32>(boxY) !== top;
+    store<i32>(boxX, left);
+    store<i32>(boxY, top);
     store<f64>(fit + N + at, max(BRIGHTNESS_LEAST, load<f64>(fit + N + at)));
   }
+  return moved;
 }
 
 function solveStep(fit: usize, size: i32, damping: f64): bool {
@@ -139,7 +153,7 @@ function copyValues(fit: usize, s: Settings, aside: bool): void {
 /** Applies the step, shortened where it would leap; true when nothing moved to speak of. */
 function takeStep(fit: usize, s: Settings, count: i32): bool {
   const most = STEP_MOST_SIGMAS * s.sigma;
-  const small = count > 1 ? STEP_DONE_TOGETHER : 1;
+  const small = count > 1 ? STEP_DONE_TOGETHER * s.stepDone : s.stepDone;
   let done = true;
   s.offset += load<f64>(fit + STEP);
   for (let i: i32 = 0; i < count; i++) {
@@ -149,8 +163,8 @@ function takeStep(fit: usize, s: Settings, count: i32): bool {
     const dy = max(-most, min(most, load<f64>(step + 16)));
     const before = load<f64>(fit + N + at);
     const n = max(max(BRIGHTNESS_LEAST, BRIGHTNESS_KEPT * before), before + load<f64>(step + 24));
-    if (!(abs(dx) <= small * STEP_DONE_PX && abs(dy) <= small * STEP_DONE_PX)) done = false;
-    if (!(abs(n - before) <= small * STEP_DONE_BRIGHTNESS * n)) done = false;
+    if (!(abs(dx) <= small && abs(dy) <= small)) done = false;
+    if (!(abs(n - before) <= STEP_DONE_BRIGHTNESS_PER_PX * small * n)) done = false;
     const left = <f64>(load<i32>(fit + BOX_X + ((<usize>i) << 2)) + s.x0);
     const top = <f64>(load<i32>(fit + BOX_Y + ((<usize>i) << 2)) + s.y0);
     const last = <f64>(s.side - 1);

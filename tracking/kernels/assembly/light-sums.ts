@@ -1,23 +1,27 @@
 /**
- * Every `stride`-th pixel that is usable, packed.
+ * Every `stride`-th pixel that is usable, in photoelectrons, packed.
  *
  * @param electronsOut f32 @param backgroundOut f32, each with room for all pixels looked at
  * @returns number of pixels packed
  */
 export function gatherLight(
-  electrons: usize,
+  counts: usize,
+  bad: usize,
   background: usize,
-  usable: usize,
   pixels: i32,
   stride: i32,
+  offset: f32,
+  perCount: f32,
+  saturation: f32,
   electronsOut: usize,
   backgroundOut: usize,
 ): i32 {
   let count: usize = 0;
   for (let i: usize = 0; i < <usize>pixels; i += stride) {
-    store<f32>(electronsOut + (count << 2), load<f32>(electrons + (i << 2)));
+    const e = (load<f32>(counts + (i << 2)) - offset) * perCount;
+    store<f32>(electronsOut + (count << 2), e);
     store<f32>(backgroundOut + (count << 2), load<f32>(background + (i << 2)));
-    count += <usize>load<u8>(usable + i);
+    count += <usize>(load<u8>(bad + i) === 0 && e - e === 0 && e < saturation);
   }
   return <i32>count;
 }

@@ -1,20 +1,23 @@
 import { correlateColumns, correlateRow } from './correlate';
+import { FrameFacts } from './counts';
 import { noiseRow } from './noise-row';
 
 /**
- * The frame in units of its own noise (see `noiseRow`), correlated with the spot along x and y. Rows are
- * correlated along x into a band of rows that stays in the cache, and from there along y.
+ * Writes down the facts of the frame, then fills `model` and the frame in units of its own noise (see
+ * `noiseRow`), correlated with the spot along x and y. Rows are correlated along x into a band of rows that
+ * stays in the cache, and from there along y.
  *
+ * @param facts address of `FrameFacts`
  * @param noise f32, room for `reach` zeros, a row and `reach` zeros
  * @param band f32, `bandRows` + 2 `reach` rows of `paddedWidth` pixels, which is a multiple of 16
  * @param weights f32 at distance 0 .. reach
  * @param correctionX f32 factor per column @param correctionY f32 factor per row
  */
 export function respond(
-  electrons: usize,
-  usable: usize,
+  facts: usize,
+  counts: usize,
+  bad: usize,
   background: usize,
-  bare: usize,
   model: usize,
   response: usize,
   width: i32,
@@ -27,11 +30,19 @@ export function respond(
   reach: i32,
   correctionX: usize,
   correctionY: usize,
+  offset: f32,
+  perCount: f32,
+  saturation: f32,
   scale: f32,
   shift: f32,
   floor: f32,
-  saturation: f32,
 ): void {
+  const frame = changetype<FrameFacts>(facts);
+  frame.offset = offset;
+  frame.perCount = perCount;
+  frame.saturation = saturation;
+  frame.scale = scale;
+  frame.shift = shift;
   const stride = paddedWidth << 2;
   const first = noise + ((<usize>reach) << 2);
   // What noiseRow writes behind the last pixel belongs to the next row.
@@ -47,19 +58,7 @@ export function respond(
       if (next < height) {
         const at = <usize>next * <usize>width;
         const far = at << 2;
-        noiseRow(
-          electrons + far,
-          usable + at,
-          background + far,
-          bare + far,
-          model + far,
-          first,
-          width,
-          scale,
-          shift,
-          floor,
-          saturation,
-        );
+        noiseRow(frame, counts + far, bad + at, background + far, model + far, first, width, floor);
         memory.fill(behind, 0, behindBytes);
         correlateRow(first, weights, reach, correctionX, place, paddedWidth);
       } else {
