@@ -31,7 +31,7 @@ interface CompareOptions {
  * Passes that warm a process up and aren't counted. Most of measuring the image and of linking runs once a
  * recording, so that the compilers need some recordings to see what is worth their work.
  */
-const WARM_ROUNDS = 6;
+const WARM_ROUNDS = 10;
 /** Without SIMD the warm-up takes long and changes little. */
 const PLAIN_WARM_ROUNDS = 2;
 
