@@ -5,6 +5,7 @@ import { execute, selectRow } from '@/models/queries/select';
 const LIMITS = {
   changesPerMinute: { windowS: 60, what: 'changes a minute' },
   analysesPerHour: { windowS: 3600, what: 'analyses an hour' },
+  exportsPerHour: { windowS: 3600, what: 'data packages an hour' },
 } as const;
 
 /**

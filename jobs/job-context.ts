@@ -41,6 +41,7 @@ const TABLE_OF: Record<JobSubject, string> = {
   analysis: 'analyses',
   mail: 'mails',
   lab: 'labs',
+  export: 'exports',
 };
 
 /** Everyone locks the subject before rows of its work, so that nobody waits in a circle. */

@@ -1,3 +1,4 @@
+import { buildExportHandler } from './build-export.handler';
 import { checkFilesHandler } from './check-files.handler';
 import { composeStripsHandler } from './compose-strips.handler';
 import { detectSpotsHandler } from './detect-spots.handler';
@@ -17,6 +18,7 @@ const handlers = [
   sendMailHandler,
   checkFilesHandler,
   composeStripsHandler,
+  buildExportHandler,
 ] as unknown as JobHandler[];
 
 /** Every kind of work and who does it. */

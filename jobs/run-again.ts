@@ -3,9 +3,11 @@ import { codeVersion } from '@/lib/env';
 import { LabError, notFound } from '@/lib/errors';
 import { getSequelize } from '@/models/database';
 import { models } from '@/models';
+import { reviveExport } from '@/models/queries/exports';
 import { setMailState } from '@/models/queries/mails';
 import { requeueJob, requeueJobsOf, type JobState } from '@/models/queries/requeue-jobs';
 import { selectRow } from '@/models/queries/select';
+import { buildExportJob } from './build-export';
 import { checkFilesJob } from './check-files';
 import { composeStripsJob } from './compose-strips';
 import { detectSpotsJob } from './detect-spots';
@@ -28,6 +30,7 @@ const DEFINITIONS: readonly Known[] = [
   sendMailJob,
   checkFilesJob,
   composeStripsJob,
+  buildExportJob,
 ];
 
 /** Work for an analysis that is done: it fails alone and is asked for again alone. */
@@ -86,6 +89,7 @@ async function revive(
   transaction: Transaction,
 ): Promise<void> {
   if (subject === 'mail') return setMailState(subjectId, 'waiting', transaction);
+  if (subject === 'export') return reviveExport(subjectId, transaction);
   if (subject === 'recording') return reviveRecording(labId, subjectId, transaction);
   if (subject === 'analysis') return reviveAnalysis(labId, subjectId, transaction);
 }

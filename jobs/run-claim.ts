@@ -181,6 +181,7 @@ const DOING: Record<string, string> = {
   'measure-flow': 'measuring the flow',
   'send-mail': 'sending a mail',
   'check-files': 'checking stored files',
+  'build-export': 'building a data package',
 };
 
 function whileDoing(claim: JobClaim, subject: JobSubject): string {

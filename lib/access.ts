@@ -89,6 +89,18 @@ export const ACTIONS = {
   review: { scope: 'review', grants: { annotator: 'yes' } },
   settle: { scope: 'review', grants: { principal_investigator: 'yes' } },
   'assign-review': { scope: 'write', grants: { experimentalist: 'yes', principal_investigator: 'yes' } },
+  'see-exports': {
+    scope: 'export',
+    grants: { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' },
+  },
+  export: {
+    scope: 'export',
+    grants: { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' },
+  },
+  'stop-export': {
+    scope: 'export',
+    grants: { experimentalist: 'own', analyst: 'own', principal_investigator: 'yes' },
+  },
   'see-queue': { scope: 'read', grants: { principal_investigator: 'yes', lab_administrator: 'yes' } },
   'see-storage': { scope: 'read', grants: { principal_investigator: 'yes', lab_administrator: 'yes' } },
   'see-people': { scope: 'read', grants: { principal_investigator: 'yes', lab_administrator: 'yes' } },

@@ -34,6 +34,9 @@ export const AUDIT_WORDS: Record<string, string> = {
   'verdict.settled': 'settled a candidate of',
   'review.assigned': 'assigned candidates of',
   'review.taken-back': 'took back an assignment of',
+  'export.started': 'asked for the data package',
+  'export.stopped': 'stopped the data package',
+  'export.downloaded': 'downloaded the data package',
 };
 
 /** Kinds of acts to choose from: the part before the point takes all of its kind. */
@@ -52,4 +55,5 @@ export const AUDIT_KINDS = [
   { value: 'analysis', label: 'Analyses' },
   { value: 'verdict', label: 'Verdicts' },
   { value: 'review', label: 'Assignments' },
+  { value: 'export', label: 'Data packages' },
 ] as const;

@@ -7,6 +7,7 @@ import * as addMailAndFileChecks from './20261201140000-add-mail-and-file-checks
 import * as addVerdicts from './20261201151000-add-verdicts';
 import * as addFlowDetails from './20261201153000-add-flow-details';
 import * as rememberWhatAKeyMade from './20261201155000-remember-what-a-key-made';
+import * as addExports from './20261201152000-add-exports';
 
 export interface Migration {
   /** File name without its ending: the same for sources and bundles. */
@@ -25,4 +26,5 @@ export const migrations: Migration[] = [
   { name: '20261201151000-add-verdicts', ...addVerdicts },
   { name: '20261201153000-add-flow-details', ...addFlowDetails },
   { name: '20261201155000-remember-what-a-key-made', ...rememberWhatAKeyMade },
+  { name: '20261201152000-add-exports', ...addExports },
 ];

@@ -2,8 +2,10 @@ import { dropOldKeys } from '@/auth/idempotency';
 import { log } from '@/auth/log';
 import { dropOldWindows } from '@/auth/rate-limit';
 import { askForNightlyChecks } from '@/jobs/check-files';
+import { dropExport } from '@/jobs/exports/export-folder';
 import { dropKeptMail } from '@/jobs/mail/keep-mail';
 import { limit } from '@/lib/env';
+import { expireExports } from '@/models/queries/exports';
 import { dropOldMails } from '@/models/queries/mails';
 import { forgetEmptyFolders, reconcileUploads } from './uploads/reconcile-uploads';
 
@@ -27,6 +29,7 @@ export function startHousekeeping(): void {
       await dropOldKeys();
       await dropOldMails(MAIL_DAYS);
       await dropKeptMail(MAIL_DAYS);
+      for (const id of await expireExports()) await dropExport(id);
       await askForNightlyChecks(new Date(), limit('nightlyCheckBytes'));
     } catch (err) {
       log.warn({ err }, 'housekeeping failed, tried again soon');

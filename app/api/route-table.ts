@@ -2,6 +2,7 @@ import { z } from 'zod';
 import type { Action } from '@/lib/access';
 import { campaignCreateSchema, campaignPatchSchema } from '@/lib/schemas/campaign';
 import { compareQuery } from '@/lib/schemas/compare';
+import { exportCreateSchema } from '@/lib/schemas/export';
 import * as lists from '@/lib/schemas/list-query';
 import { analysisCreateSchema, recipeCreateSchema, tryRecipeSchema } from '@/lib/schemas/recipe';
 import * as recordings from '@/lib/schemas/recording';
@@ -10,6 +11,7 @@ import * as analysis from '@/lib/views/analysis-view';
 import { campaignViewSchema } from '@/lib/views/campaign-view';
 import { listOf } from '@/lib/views/common';
 import { compareViewSchema } from '@/lib/views/compare-view';
+import { exportViewSchema } from '@/lib/views/export-view';
 import * as lab from '@/lib/views/lab-view';
 import { recipeViewSchema } from '@/lib/views/recipe-view';
 import { recordingViewSchema, uploadViewSchema } from '@/lib/views/recording-view';
@@ -263,6 +265,35 @@ export const ROUTES = {
     'Line density and spacing by each method',
     'application/json',
   ),
+
+  'GET /exports': {
+    action: 'see-exports',
+    summary: 'Data packages, newest first',
+    query: lists.exportListQuery,
+    answer: listOf(exportViewSchema),
+  },
+  'POST /exports': {
+    action: 'export',
+    summary: 'Build a data package of chosen analyses',
+    body: exportCreateSchema,
+    answer: exportViewSchema,
+    status: 202,
+  },
+  'GET /exports/{exportId}': {
+    action: 'see-exports',
+    summary: 'A data package with its state; file says where to download it once it is done',
+    answer: exportViewSchema,
+  },
+  'POST /exports/{exportId}/stop': {
+    action: 'stop-export',
+    summary: 'Stop the building of a data package',
+    answer: exportViewSchema,
+  },
+  'GET /exports/{exportId}/file': {
+    action: 'see-exports',
+    summary: 'The package itself, whole or by one range of bytes',
+    media: 'application/zip',
+  },
 
   'GET /recipes': {
     action: 'see-data',

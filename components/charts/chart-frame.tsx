@@ -2,7 +2,7 @@
 
 import { useId, useRef, useState, type ReactNode } from 'react';
 import { Cell, HeadCell, Row, Table } from '@/components/ui/table';
-import { chartCell, chartCsv, type ChartTable } from './chart-table';
+import { chartCell, chartCsv, type ChartTable } from '@/lib/charts/chart-table';
 import { saveText, svgFileText } from './save-file';
 
 interface ChartFrameProps {

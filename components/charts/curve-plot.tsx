@@ -2,6 +2,7 @@
 
 import type { AxisRange } from '@/lib/charts/axis-ticks';
 import { DRAWING_ORDER, type Curve } from '@/lib/charts/curve';
+import { curveTable } from '@/lib/charts/curve-table';
 import { ChartFrame } from './chart-frame';
 import { Plot } from './plot';
 import { BandMark, DotMark, LabelMark, LineMark } from './plot-marks';
@@ -83,20 +84,3 @@ export function CurvePlot({ curves, x, y, level, label, fileName }: CurvePlotPro
 
 /** Mean of the values, to tell which curve lies uppermost. */
 const heightOf = ({ points }: Curve) => points.reduce((sum, { y }) => sum + (y ?? 0), 0) / points.length;
-
-const nameOf = ({ symbol, words }: AxisTitle) => words ?? symbol ?? '';
-
-function curveTable(curves: readonly Curve[], x: AxisTitle, y: AxisTitle) {
-  return {
-    columns: [
-      { name: 'population' },
-      { name: nameOf(x), unit: x.unit },
-      { name: nameOf(y), unit: y.unit },
-      { name: 'low, 95 %', unit: y.unit },
-      { name: 'high, 95 %', unit: y.unit },
-    ],
-    rows: curves.flatMap(({ population, points }) =>
-      points.map(({ x: at, y: value, low, high }) => [population, at, value, low, high]),
-    ),
-  };
-}

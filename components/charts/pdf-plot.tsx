@@ -2,6 +2,7 @@
 
 import { EmptyState } from '@/components/ui/page-states';
 import { DRAWING_ORDER } from '@/lib/charts/curve';
+import { pdfTable } from '@/lib/charts/pdf-table';
 import { ChartFrame } from './chart-frame';
 import { binMiddleMmS, densitySMm, labelBin, pdfBands, pdfPoints, pdfRanges } from '@/lib/charts/pdf-series';
 import type { PdfComponent, PdfPopulation, PdfSeries } from '@/lib/charts/pdf-series';
@@ -111,29 +112,4 @@ function SeriesLabel({ one, scale }: { one: PdfSeries; scale: 'log' | 'linear' }
       note={one.finding}
     />
   );
-}
-
-function pdfTable(series: readonly PdfSeries[]) {
-  return {
-    columns: [
-      { name: 'population' },
-      { name: 'bin low', unit: 'mm/s' },
-      { name: 'bin high', unit: 'mm/s' },
-      { name: 'count' },
-      { name: 'density', unit: 's/mm' },
-      { name: 'low, 95 %', unit: 's/mm' },
-      { name: 'high, 95 %', unit: 's/mm' },
-    ],
-    rows: series.flatMap(({ population, bins }) =>
-      bins.map((bin) => [
-        population,
-        bin.low_m_s * 1000,
-        bin.high_m_s * 1000,
-        bin.count,
-        densitySMm(bin.density_s_m),
-        bin.densityLow == null ? null : densitySMm(bin.densityLow),
-        bin.densityHigh == null ? null : densitySMm(bin.densityHigh),
-      ]),
-    ),
-  };
 }

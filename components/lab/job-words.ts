@@ -7,6 +7,7 @@ const KIND_WORDS: Record<string, string> = {
   'send-mail': 'send a mail',
   'check-files': 'check stored files',
   'compose-strips': 'compose strips of candidates',
+  'build-export': 'build a data package',
 };
 
 /** What a piece of work does: `find spots, chunk 3`. */

@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { EXPORT_STATES } from '../exports/export-facts';
 import { MAIL_STATES } from '../mail/mail-kinds';
 
 export const LIST_LIMIT = 50;
@@ -121,6 +122,7 @@ export const fileCheckListQuery = listQuery(['checkedAt'], {
     )
     .optional(),
 });
+export const exportListQuery = listQuery(['createdAt'], { state: states(EXPORT_STATES) });
 export const workerListQuery = listQuery(['startedAt', 'heartbeatAt'], {});
 export const uploadListQuery = listQuery(['createdAt'], {});
 

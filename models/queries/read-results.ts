@@ -69,7 +69,8 @@ export async function measuresView(labId: string, analysisId: string): Promise<M
 
 const root = (variance: number | null) => (variance === null ? null : Math.sqrt(Math.max(0, variance)));
 
-function pdfView(pdf: VelocityPdf): MeasuresView['pdfs'][number] {
+/** A distribution under the names and units of the API. */
+export function pdfView(pdf: VelocityPdf): MeasuresView['pdfs'][number] {
   return {
     population: pdf.population,
     component: pdf.component,

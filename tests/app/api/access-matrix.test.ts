@@ -5,6 +5,7 @@ import { ACTIONS, grantFor, ROLES, type Role } from '@/lib/access';
 import { newId } from '@/lib/ids';
 import { problemSchema } from '@/lib/views/common';
 import { models } from '@/models';
+import { addExport } from '@/models/queries/exports';
 import { addMail } from '@/models/queries/mails';
 import { closeSessionLocks } from '@/models/session-locks';
 import { call, routeModule, routePaths, webSettings } from '../../helpers/call-route';
@@ -94,6 +95,23 @@ async function makeThings(): Promise<Things> {
     subjectId: mail,
     state: 'failed',
   });
+  const exported = await database.sequelize.transaction((transaction) =>
+    addExport(
+      {
+        labId: own.labId,
+        userId: maker.userId,
+        title: 'Package',
+        request: {
+          analyses: [analysis.id],
+          formats: ['csv'],
+          figures: false,
+          licence: 'CC0-1.0',
+          contributors: [],
+        },
+      },
+      transaction,
+    ),
+  );
   return {
     mailId: mail,
     jobId: job.id,
@@ -106,6 +124,7 @@ async function makeThings(): Promise<Things> {
     memberId: membership.id,
     tokenId: token.id,
     upload: upload.id,
+    exportId: exported,
     frame: '0',
   };
 }
@@ -125,6 +144,8 @@ const BODIES: Partial<Record<RouteKey, unknown>> = {
   // A frame that is not there: what is tested is who may ask, not the computation.
   'POST /recordings/{recordingId}/try': { frames: [999_999] },
   'POST /recordings/{recordingId}/analyses': {},
+  // An analysis of nobody: what is tested is who may ask.
+  'POST /exports': { analyses: ['01890a5d-ac96-774b-bcce-b302099a8057'] },
   'POST /recipes': { name: 'Recipe', fields: {} },
   'PATCH /people/{memberId}': { roles: ['analyst'] },
   'POST /people': { name: 'New', email: 'new@lab.test', roles: ['analyst'] },

@@ -1,7 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { axisTicks, showsPowers, decadeRange, paddedRange, roundStep } from '@/lib/charts/axis-ticks';
-import { chartCell, chartCsv } from '@/components/charts/chart-table';
+import { chartCell, chartCsv } from '@/lib/charts/chart-table';
 import { envelope } from '@/components/charts/envelope';
 import { labelBin, pdfBands, pdfPoints, pdfRanges, type PdfBin } from '@/lib/charts/pdf-series';
 import { linePath } from '@/components/charts/plot-marks';

@@ -1,0 +1,19 @@
+import { open } from 'node:fs/promises';
+import { join } from 'node:path';
+import type { SinkPlace, TableSink } from './table-sink';
+
+/** The table as text; what a piece brings is written as it is. */
+export async function csvSink({ folder, table }: SinkPlace): Promise<TableSink> {
+  const name = `${table.name}.csv`;
+  const file = await open(join(folder, name), 'w');
+  return {
+    async write({ csv }) {
+      if (csv !== '') await file.write(csv);
+    },
+    async finish() {
+      await file.close();
+      return [name];
+    },
+    abandon: () => file.close(),
+  };
+}

@@ -1,0 +1,169 @@
+import { citationText } from './citation';
+import { conditionEntities } from './crate-conditions';
+import type { Entity } from './crate-entity';
+import { licenceOf } from './licences';
+import { orcidUrl } from './orcid';
+import { mediaTypeOf, type PackedFile } from './packed-file';
+import type { Contributor, ExportPlan, PlannedAnalysis } from './plan';
+
+const ref = (id: string) => ({ '@id': id });
+
+const SPECIFICATION = 'https://w3id.org/ro/crate/1.2';
+const SOFTWARE = '#beadline';
+const LABORATORY = '#laboratory';
+
+/**
+ * `ro-crate-metadata.json` of an attached crate (RO-Crate 1.2, https://w3id.org/ro/crate/1.2): files with sizes and
+ * hashes, people, licence, and for each analysis an action that leads from the recording's bytes through code,
+ * recipe and conditions to its files.
+ */
+export function roCrate(plan: ExportPlan, files: readonly PackedFile[]): Record<string, unknown> {
+  const people = plan.contributors.map(person);
+  const folders = plan.analyses.map((analysis) => folderEntity(analysis, files));
+  const loose = files.filter(({ analysisId }) => analysisId === null);
+  const graph: Entity[] = [
+    {
+      '@id': 'ro-crate-metadata.json',
+      '@type': 'CreativeWork',
+      about: ref('./'),
+      conformsTo: ref(SPECIFICATION),
+    },
+    {
+      '@id': './',
+      '@type': 'Dataset',
+      name: plan.title,
+      description: plan.description || `Analyses of tracer particles in superfluid helium: ${plan.title}.`,
+      datePublished: plan.date,
+      license: ref(licenceOf(plan.licence).url),
+      creditText: citationText(plan),
+      publisher: ref(LABORATORY),
+      ...(people.length > 0 ? { author: people.map((one) => ref(one['@id'])) } : {}),
+      hasPart: [...loose.map(({ path }) => ref(path)), ...folders.map((one) => ref(one['@id']))],
+      mentions: plan.analyses.map(({ id }) => ref(actionId(id))),
+    },
+    licenceEntity(plan.licence),
+    { '@id': LABORATORY, '@type': 'Organization', name: plan.laboratory },
+    ...people,
+    ...affiliations(plan.contributors),
+    ...software(plan),
+    ...folders,
+    ...files.map(fileEntity),
+    ...plan.analyses.flatMap((analysis) => analysisEntities(analysis, files, plan.contributors)),
+  ];
+  return { '@context': `${SPECIFICATION}/context`, '@graph': withoutDoubles(graph) };
+}
+
+const actionId = (analysis: string) => `#analysis-${analysis}`;
+const recordingId = (recording: string) => `#recording-${recording}`;
+const folderId = ({ folder }: PlannedAnalysis) => `${folder}/`;
+const softwareId = (version: string) => `${SOFTWARE}-${encodeURIComponent(version)}`;
+const affiliationId = (name: string) => `#affiliation-${encodeURIComponent(name)}`;
+
+function person({ name, orcid, affiliation }: Contributor): Entity {
+  return {
+    '@id': orcid ? orcidUrl(orcid) : `#person-${encodeURIComponent(name)}`,
+    '@type': 'Person',
+    name,
+    ...(affiliation ? { affiliation: ref(affiliationId(affiliation)) } : {}),
+  };
+}
+
+const affiliations = (contributors: readonly Contributor[]): Entity[] =>
+  contributors.flatMap(({ affiliation }) =>
+    affiliation ? [{ '@id': affiliationId(affiliation), '@type': 'Organization', name: affiliation }] : [],
+  );
+
+function licenceEntity(id: string): Entity {
+  const { name, url, allows } = licenceOf(id);
+  return { '@id': url, '@type': 'CreativeWork', name, identifier: id, description: allows };
+}
+
+/** One entry per version that computed or packed. */
+function software({ codeVersion, analyses }: ExportPlan): Entity[] {
+  const versions = [...new Set([codeVersion, ...analyses.map((one) => one.codeVersion)])].sort();
+  return versions.map((version) => ({
+    '@id': softwareId(version),
+    '@type': 'SoftwareApplication',
+    name: 'Beadline',
+    version,
+  }));
+}
+
+function fileEntity({ path, bytes, sha256, title, table }: PackedFile): Entity {
+  return {
+    '@id': path,
+    '@type': 'File',
+    name: title,
+    ...(table ? { description: table.description } : {}),
+    encodingFormat: mediaTypeOf(path),
+    contentSize: String(bytes),
+    sha256,
+  };
+}
+
+function folderEntity(analysis: PlannedAnalysis, files: readonly PackedFile[]): Entity {
+  const { campaign, run, recording } = analysis;
+  const parts = files.filter(({ analysisId }) => analysisId === analysis.id);
+  return {
+    '@id': folderId(analysis),
+    '@type': 'Dataset',
+    name: `${campaign.name}, ${run.name}, ${recording.name}`,
+    description: analysis.signedOff
+      ? `Signed off on ${analysis.signedOff.at.slice(0, 10)}${analysis.signedOff.by ? ` by ${analysis.signedOff.by}` : ''}.`
+      : 'Not signed off: later versions may differ.',
+    hasPart: parts.map(({ path }) => ref(path)),
+  };
+}
+
+function analysisEntities(
+  analysis: PlannedAnalysis,
+  files: readonly PackedFile[],
+  contributors: readonly Contributor[],
+): Entity[] {
+  const { recording, run } = analysis;
+  const conditions = conditionEntities(analysis);
+  // Who is a contributor too is one person, with their ORCID where it is known.
+  const agent = analysis.createdBy
+    ? person(
+        contributors.find(({ name }) => name === analysis.createdBy) ?? {
+          name: analysis.createdBy,
+          orcid: null,
+          affiliation: null,
+        },
+      )
+    : null;
+  return [
+    {
+      '@id': recordingId(recording.id),
+      '@type': 'CreativeWork',
+      name: recording.name,
+      description: `Camera stack of ${recording.frames} frames of ${recording.width} x ${recording.height} px, ${recording.bytes} bytes, not part of this package.`,
+      ...(recording.sha256 ? { identifier: `sha256:${recording.sha256}` } : {}),
+      ...(run.startedAt ? { dateCreated: run.startedAt } : {}),
+    },
+    ...(agent ? [agent] : []),
+    ...conditions,
+    {
+      '@id': actionId(analysis.id),
+      '@type': 'CreateAction',
+      name: `Analysis of ${recording.name}`,
+      identifier: analysis.id,
+      instrument: ref(softwareId(analysis.codeVersion)),
+      ...(agent ? { agent: ref(agent['@id']) } : {}),
+      ...(analysis.startedAt ? { startTime: analysis.startedAt } : {}),
+      ...(analysis.finishedAt ? { endTime: analysis.finishedAt } : {}),
+      object: [ref(recordingId(recording.id)), ...conditions.map((one) => ref(one['@id']))],
+      result: [
+        ref(folderId(analysis)),
+        ...files.filter(({ analysisId }) => analysisId === analysis.id).map(({ path }) => ref(path)),
+      ],
+    },
+  ];
+}
+
+/** Things that are named from several places stand in the graph once: the first wins. */
+function withoutDoubles(graph: readonly Entity[]): Entity[] {
+  const seen = new Map<string, Entity>();
+  for (const entity of graph) if (!seen.has(entity['@id'])) seen.set(entity['@id'], entity);
+  return [...seen.values()];
+}
