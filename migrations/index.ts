@@ -24,7 +24,7 @@ export const migrations: Migration[] = [
   { name: '20261201130000-add-motion-measures', ...addMotionMeasures },
   { name: '20261201140000-add-mail-and-file-checks', ...addMailAndFileChecks },
   { name: '20261201151000-add-verdicts', ...addVerdicts },
+  { name: '20261201152000-add-exports', ...addExports },
   { name: '20261201153000-add-flow-details', ...addFlowDetails },
   { name: '20261201155000-remember-what-a-key-made', ...rememberWhatAKeyMade },
-  { name: '20261201152000-add-exports', ...addExports },
 ];

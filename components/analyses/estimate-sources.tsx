@@ -1,7 +1,7 @@
 import { Fold } from '@/components/ui/fold';
 import { Unit } from '@/components/ui/quantity';
 import { methodName } from '@/lib/charts/estimate-rows';
-import { chartCell } from '@/components/charts/chart-table';
+import { chartCell } from '@/lib/charts/chart-table';
 import type { MeasuresView } from '@/lib/views/analysis-view';
 import { SourceFold } from './source-fold';
 
