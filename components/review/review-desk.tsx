@@ -99,6 +99,7 @@ function Sitting({ queue, ...props }: ReviewDeskProps & { queue: ReviewQueueView
       reason: reason?.trim() || null,
       note: draft.note.trim() || null,
       revision,
+      steps: own.history.length + steps,
     });
     if (document.activeElement instanceof HTMLElement) document.activeElement.blur();
     move(way.afterVerdict(sitting, id, verdict));

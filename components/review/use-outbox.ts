@@ -41,7 +41,10 @@ function makeOutbox(owner: string): VerdictOutbox {
     key,
     send: ({ candidateId, verdict, reason, note, revision }) =>
       api(path(candidateId), { method: 'PUT', body: { verdict, reason, note }, revision }),
-    current: (candidateId) => api<OwnVerdictView>(path(candidateId)).then(({ verdict, reason, note }) => (verdict ? { verdict, reason, note } : null)), // prettier-ignore
+    current: async (candidateId) => {
+      const { verdict, reason, note, revision, history } = await api<OwnVerdictView>(path(candidateId));
+      return { verdict, reason, note, revision, steps: history.length };
+    },
     exclusive: locks ? (work) => locks.request(key, work).then(() => undefined) : undefined,
   });
 }

@@ -11,6 +11,8 @@ export interface OutboxItem {
   note: string | null;
   /** Revision that it starts from: the same at each try, so that the server can tell a repetition. */
   revision: number;
+  /** Verdicts of this person on the candidate before this one. */
+  steps: number;
 }
 
 export interface RefusedItem extends OutboxItem {
@@ -24,6 +26,11 @@ export interface OutboxState {
   trouble: string | null;
 }
 
+/** This person's verdict as the server holds it. */
+export interface HeldVerdict extends Pick<OutboxItem, 'reason' | 'note' | 'revision' | 'steps'> {
+  verdict: Verdict | null;
+}
+
 interface Options {
   /** Outlives the page: what is kept here is sent by the next one. */
   storage: Pick<Storage, 'getItem' | 'setItem'>;
@@ -31,7 +38,7 @@ interface Options {
   key: string;
   send: (item: OutboxItem) => Promise<unknown>;
   /** What the server holds of this person's verdict, to tell a repetition from a change made elsewhere. */
-  current: (candidateId: string) => Promise<Pick<OutboxItem, 'verdict' | 'reason' | 'note'> | null>;
+  current: (candidateId: string) => Promise<HeldVerdict>;
   /** One page at a time sends; without such a lock all may, since the server tells repetitions. */
   exclusive?: (work: () => Promise<void>) => Promise<void>;
   wait?: (ms: number) => Promise<void>;
@@ -113,8 +120,8 @@ export class VerdictOutbox {
       } catch (error) {
         const known = error instanceof ApiError ? error : null;
         if (known && isFinal(known)) {
-          if (known.code === 'CONFLICT' && (await this.isStored(item))) this.settle(item, null);
-          else this.settle(item, sentenceOf(known));
+          if (known.code === 'CONFLICT') await this.resolve(item, known);
+          else this.settle(item, known.message);
           continue;
         }
         this.tell(troubleOf(known));
@@ -124,10 +131,28 @@ export class VerdictOutbox {
     }
   }
 
-  /** An answer may have been lost after the server had stored it. */
-  private async isStored({ candidateId, verdict, reason, note }: OutboxItem): Promise<boolean> {
-    const held = await this.options.current(candidateId).catch(() => null);
-    return held !== null && held.verdict === verdict && held.reason === reason && held.note === note;
+  /**
+   * The revision had moved on: because the answer to this very verdict was lost; or because the candidate itself has
+   * changed, as when tracks were measured anew, and then it is sent again; or because the person judged elsewhere.
+   */
+  private async resolve(item: OutboxItem, refusal: ApiError): Promise<void> {
+    const held = await this.options.current(item.candidateId).catch(() => null);
+    if (held === null) {
+      this.tell(troubleOf(null));
+      return this.pause(FIRST_PAUSE_MS);
+    }
+    const stored = held.verdict === item.verdict && held.reason === item.reason && held.note === item.note;
+    if (stored && held.steps > item.steps) return this.settle(item, null);
+    if (held.steps !== item.steps || held.revision === item.revision) {
+      const elsewhere = held.steps !== item.steps;
+      return this.settle(
+        item,
+        elsewhere ? 'You judged it elsewhere meanwhile, and that stands.' : refusal.message,
+      );
+    }
+    const { waiting, refused } = this.read();
+    const moved = { ...item, revision: held.revision };
+    this.write({ waiting: waiting.map((one) => (one.id === item.id ? moved : one)), refused });
   }
 
   private settle(item: OutboxItem, refusal: string | null): void {
@@ -180,9 +205,6 @@ export class VerdictOutbox {
 /** Refusals that no further try would change. */
 const isFinal = ({ status, code }: ApiError): boolean =>
   status >= 400 && status < 500 && ![401, 408, 423, 425, 429].includes(status) && code !== LINK_LOST;
-
-const sentenceOf = ({ code, message }: ApiError): string =>
-  code === 'CONFLICT' ? 'You judged it elsewhere meanwhile, and that stands.' : message;
 
 function troubleOf(error: ApiError | null): string {
   if (error?.status === 401) {

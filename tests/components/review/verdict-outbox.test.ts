@@ -15,7 +15,10 @@ class Server {
   /** For each request: `before`: it never arrives; `after`: its answer is lost. */
   constructor(private readonly losses: ('before' | 'after' | null)[] = []) {}
 
-  revisionOf = (candidateId: string) => 1 + this.rows.filter((row) => row.candidateId === candidateId).length;
+  /** Times that a candidate itself has changed. */
+  changes = 0;
+  stepsOf = (candidateId: string) => this.rows.filter((row) => row.candidateId === candidateId).length;
+  revisionOf = (candidateId: string) => 1 + this.changes + this.stepsOf(candidateId);
   last = (candidateId: string) => this.rows.filter((row) => row.candidateId === candidateId).at(-1) ?? null;
 
   send = async ({ candidateId, verdict, reason, note, revision }: OutboxItem): Promise<void> => {
@@ -31,7 +34,16 @@ class Server {
     }
     if (loss === 'after') throw lost;
   };
-  current = async (candidateId: string) => this.last(candidateId);
+  current = async (candidateId: string) => {
+    const { verdict = null, reason = null, note = null } = this.last(candidateId) ?? {};
+    return {
+      verdict,
+      reason,
+      note,
+      revision: this.revisionOf(candidateId),
+      steps: this.stepsOf(candidateId),
+    };
+  };
 }
 
 const item = (fields: Partial<OutboxItem>): OutboxItem => ({
@@ -42,6 +54,7 @@ const item = (fields: Partial<OutboxItem>): OutboxItem => ({
   reason: null,
   note: null,
   revision: 1,
+  steps: 0,
   ...fields,
 });
 const open = (
@@ -69,7 +82,7 @@ describe('verdicts on their way', () => {
           counts[candidateId] = (counts[candidateId] ?? 0) + 1;
           // Notes tell one act from the next, so that what is equal is the same act.
           const act = { candidateId, verdict, reason: null, note: String(i) };
-          outbox.add(item({ ...act, revision: counts[candidateId] }));
+          outbox.add(item({ ...act, revision: counts[candidateId], steps: counts[candidateId] - 1 }));
           return act;
         });
         await outbox.idle();
@@ -82,7 +95,10 @@ describe('verdicts on their way', () => {
 
   it('a page that is closed before the answer leaves them to the next one', async () => {
     const storage = makeStorage();
-    const never = { send: () => new Promise<void>(() => undefined), current: async () => null };
+    const never = {
+      send: () => new Promise<void>(() => undefined),
+      current: () => new Promise<never>(() => undefined),
+    };
     open(never, storage).add(item({ verdict: 'no', reason: 'the spots merge' }));
     const server = new Server();
     const next = open(server, storage);
@@ -134,6 +150,17 @@ describe('verdicts on their way', () => {
     const [refused] = outbox.state().refused;
     expect(refused.sentence).toBe('The principal investigator has settled this candidate.');
     outbox.dismiss(refused.id);
+    expect(outbox.state().refused).toEqual([]);
+  });
+
+  it('a candidate that was measured anew meanwhile takes the verdict at its new revision', async () => {
+    const server = new Server(['after']);
+    server.changes = 2;
+    const outbox = open(server);
+    outbox.add(item({}));
+    outbox.add(item({ verdict: 'no', revision: 2, steps: 1 }));
+    await outbox.idle();
+    expect(server.rows.map(({ verdict }) => verdict)).toEqual(['yes', 'no']);
     expect(outbox.state().refused).toEqual([]);
   });
 
