@@ -39,6 +39,7 @@ export interface JobHandler<Payload extends Record<string, unknown> = Record<str
 const TABLE_OF: Record<JobSubject, string> = {
   recording: 'recordings',
   analysis: 'analyses',
+  rehearsal: 'rehearsals',
   mail: 'mails',
   lab: 'labs',
   export: 'exports',

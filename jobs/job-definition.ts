@@ -1,7 +1,7 @@
 import type { z } from 'zod';
 
 /** What a job works for: its row is locked before results are written, and fails with the job. */
-export type JobSubject = 'recording' | 'analysis' | 'mail' | 'lab' | 'export';
+export type JobSubject = 'recording' | 'analysis' | 'rehearsal' | 'mail' | 'lab' | 'export';
 
 /** The public half of a job: all that the web needs to ask for the work. */
 export interface JobDefinition<Payload extends Record<string, unknown> = Record<string, unknown>> {

@@ -7,6 +7,7 @@ import { dropStagedMeasures } from '@/models/queries/staged-results';
 import { writeTrackMeasures } from '@/models/queries/write-tracks';
 import type { FlowMeasures } from '@/tracking/flow-measures';
 import { POINT_BRIDGED, type Tracks } from '@/tracking/types';
+import { askForAssessment } from './assess-rehearsal';
 import type { JobHandler } from './job-context';
 import { LONG_TIMEOUT_MS } from './job-timeouts';
 import { measureFlowJob } from './measure-flow';
@@ -49,6 +50,7 @@ export const measureFlowHandler: JobHandler<Record<string, never>> = {
       const spots = await readSpotsPerFrame(analysisId, transaction);
       await finishAnalysis(analysisId, summaryOf(spots, tracks, measures), transaction);
       await tellOfAnalysis(analysisId, { kind: 'analysis-done' }, transaction);
+      await askForAssessment(analysisId, transaction);
     });
   },
   onGivenUp: ({ subjectId }, reason, transaction) => giveUpAnalysis(subjectId, reason, transaction),

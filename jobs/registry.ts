@@ -1,3 +1,4 @@
+import { assessRehearsalHandler } from './assess-rehearsal.handler';
 import { buildExportHandler } from './build-export.handler';
 import { checkFilesHandler } from './check-files.handler';
 import { composeStripsHandler } from './compose-strips.handler';
@@ -8,6 +9,7 @@ import { linkTracksHandler } from './link-tracks.handler';
 import { measureFlowHandler } from './measure-flow.handler';
 import { measureImageHandler } from './measure-image.handler';
 import { sendMailHandler } from './send-mail.handler';
+import { simulateRehearsalHandler } from './simulate-rehearsal.handler';
 
 const handlers = [
   ingestRecordingHandler,
@@ -19,6 +21,8 @@ const handlers = [
   checkFilesHandler,
   composeStripsHandler,
   buildExportHandler,
+  simulateRehearsalHandler,
+  assessRehearsalHandler,
 ] as unknown as JobHandler[];
 
 /** Every kind of work and who does it. */

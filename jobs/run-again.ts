@@ -5,9 +5,11 @@ import { getSequelize } from '@/models/database';
 import { models } from '@/models';
 import { reviveExport } from '@/models/queries/exports';
 import { setMailState } from '@/models/queries/mails';
+import { rehearsalOfAnalysis, setRehearsalState } from '@/models/queries/rehearsal-work';
 import { requeueJob, requeueJobsOf, type JobState } from '@/models/queries/requeue-jobs';
 import { selectRow } from '@/models/queries/select';
 import { buildExportJob } from './build-export';
+import { assessRehearsalJob } from './assess-rehearsal';
 import { checkFilesJob } from './check-files';
 import { composeStripsJob } from './compose-strips';
 import { detectSpotsJob } from './detect-spots';
@@ -19,6 +21,7 @@ import { linkTracksJob } from './link-tracks';
 import { measureFlowJob } from './measure-flow';
 import { measureImageJob } from './measure-image';
 import { sendMailJob } from './send-mail';
+import { simulateRehearsalJob } from './simulate-rehearsal';
 
 type Known = Pick<JobDefinition, 'kind' | 'subject' | 'maxAttempts'>;
 const DEFINITIONS: readonly Known[] = [
@@ -31,10 +34,12 @@ const DEFINITIONS: readonly Known[] = [
   checkFilesJob,
   composeStripsJob,
   buildExportJob,
+  simulateRehearsalJob,
+  assessRehearsalJob,
 ];
 
 /** Work for an analysis that is done: it fails alone and is asked for again alone. */
-const BESIDE: ReadonlySet<string> = new Set([composeStripsJob.kind]);
+const BESIDE: ReadonlySet<string> = new Set([composeStripsJob.kind, assessRehearsalJob.kind]);
 
 interface Row {
   id: string;
@@ -65,6 +70,10 @@ export async function runAgain(
     }
     const alone = BESIDE.has(job.kind);
     if (job.state === 'failed' && !alone) await revive(definition, labId, job.subject_id, transaction);
+    if (job.state === 'failed' && job.kind === assessRehearsalJob.kind) {
+      const rehearsal = await rehearsalOfAnalysis(job.subject_id, transaction);
+      if (rehearsal) await reviveRehearsal(rehearsal.id, transaction);
+    }
     if (definition.subject === 'analysis' && job.state === 'failed' && !alone) {
       await requeueJobsOf(job.subject_id, definition.maxAttempts, transaction);
     } else await requeueJob(job.id, definition.maxAttempts, transaction);
@@ -90,9 +99,13 @@ async function revive(
 ): Promise<void> {
   if (subject === 'mail') return setMailState(subjectId, 'waiting', transaction);
   if (subject === 'export') return reviveExport(subjectId, transaction);
+  if (subject === 'rehearsal') return reviveRehearsal(subjectId, transaction);
   if (subject === 'recording') return reviveRecording(labId, subjectId, transaction);
   if (subject === 'analysis') return reviveAnalysis(labId, subjectId, transaction);
 }
+
+const reviveRehearsal = (id: string, transaction: Transaction) =>
+  setRehearsalState(id, 'running', { from: ['failed'], transaction });
 
 async function reviveRecording(labId: string, id: string, transaction: Transaction): Promise<void> {
   const recording = await models().Recording.findOne({ where: { id, labId }, transaction });

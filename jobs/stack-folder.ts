@@ -7,6 +7,9 @@ export const stackFolder = (recordingId: string): string => join(dataDir(), 'sta
 /** The stack of a recording that came as one file. */
 export const stackFile = (recordingId: string): string => join(stackFolder(recordingId), 'stack.bin');
 
+/** What a rehearsal's recording was made of; other recordings have none. */
+export const truthFile = (recordingId: string): string => join(stackFolder(recordingId), 'truth.bin');
+
 /** One file of a recording that came as a folder; positions count from 0. */
 export const folderFile = (recordingId: string, position: number): string =>
   join(stackFolder(recordingId), 'files', `${String(position).padStart(6, '0')}.bin`);

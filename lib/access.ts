@@ -76,6 +76,14 @@ export const ACTIONS = {
       lab_administrator: 'yes',
     },
   },
+  'make-rehearsal': {
+    scope: 'write',
+    grants: { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' },
+  },
+  'remove-rehearsal': {
+    scope: 'write',
+    grants: { experimentalist: 'own', analyst: 'own', principal_investigator: 'yes' },
+  },
   'save-recipe': {
     scope: 'write',
     grants: { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' },

@@ -27,6 +27,9 @@ export const AUDIT_WORDS: Record<string, string> = {
   'run.restored': 'restored the run',
   'recording.removed': 'removed the recording',
   'recording.restored': 'restored the recording',
+  'rehearsal.made': 'made the rehearsal',
+  'rehearsal.stopped': 'stopped the rehearsal',
+  'rehearsal.removed': 'removed the rehearsal',
   'analysis.started': 'started an analysis of',
   'analysis.stopped': 'stopped an analysis of',
   'verdict.given': 'judged a candidate of',
@@ -56,4 +59,5 @@ export const AUDIT_KINDS = [
   { value: 'verdict', label: 'Verdicts' },
   { value: 'review', label: 'Assignments' },
   { value: 'export', label: 'Data packages' },
+  { value: 'rehearsal', label: 'Rehearsals' },
 ] as const;

@@ -6,6 +6,7 @@ import * as addMotionMeasures from './20261201130000-add-motion-measures';
 import * as addMailAndFileChecks from './20261201140000-add-mail-and-file-checks';
 import * as addVerdicts from './20261201151000-add-verdicts';
 import * as addFlowDetails from './20261201153000-add-flow-details';
+import * as addRehearsals from './20261201154000-add-rehearsals';
 import * as rememberWhatAKeyMade from './20261201155000-remember-what-a-key-made';
 import * as addExports from './20261201152000-add-exports';
 
@@ -26,5 +27,6 @@ export const migrations: Migration[] = [
   { name: '20261201151000-add-verdicts', ...addVerdicts },
   { name: '20261201152000-add-exports', ...addExports },
   { name: '20261201153000-add-flow-details', ...addFlowDetails },
+  { name: '20261201154000-add-rehearsals', ...addRehearsals },
   { name: '20261201155000-remember-what-a-key-made', ...rememberWhatAKeyMade },
 ];

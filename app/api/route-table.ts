@@ -18,6 +18,7 @@ import { recordingViewSchema, uploadViewSchema } from '@/lib/views/recording-vie
 import { runViewSchema } from '@/lib/views/run-view';
 import { LAB_ROUTES } from './lab-routes';
 import { REVIEW_ROUTES } from './review-routes';
+import { REHEARSAL_ROUTES } from './rehearsal-routes';
 
 export const METHODS = ['GET', 'HEAD', 'POST', 'PUT', 'PATCH', 'DELETE'] as const;
 export type Method = (typeof METHODS)[number];
@@ -310,6 +311,7 @@ export const ROUTES = {
   },
 
   ...REVIEW_ROUTES,
+  ...REHEARSAL_ROUTES,
   ...LAB_ROUTES,
 } as const satisfies Record<string, ApiRoute>;
 

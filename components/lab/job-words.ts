@@ -4,6 +4,8 @@ const KIND_WORDS: Record<string, string> = {
   'detect-spots': 'find spots',
   'link-tracks': 'link tracks',
   'measure-flow': 'measure the flow',
+  'simulate-rehearsal': 'simulate a rehearsal',
+  'assess-rehearsal': 'compare a rehearsal with its truth',
   'send-mail': 'send a mail',
   'check-files': 'check stored files',
   'compose-strips': 'compose strips of candidates',

@@ -1,11 +1,13 @@
 import { setPriority } from 'node:os';
 import type { FromChild, TaskInput, TaskName, TaskOutput, ToChild } from './tasks';
 import { composeStrips } from './steps/compose-strips';
+import { assessRehearsal } from './steps/assess-rehearsal';
 import { detectChunk } from './steps/detect-chunk';
 import { inspectStack } from './steps/inspect-stack';
 import { linkTracks } from './steps/link-tracks';
 import { measureFlow } from './steps/measure-flow';
 import { measureImage } from './steps/measure-image';
+import { simulateStack } from './steps/simulate-stack';
 import { tryRecipe } from './steps/try-recipe';
 import type { WorkContext } from './steps/work-context';
 
@@ -19,6 +21,8 @@ const WORK: Work = {
   measureFlow,
   tryRecipe,
   composeStrips,
+  simulateStack,
+  assessRehearsal,
 };
 
 /** Progress is told so often at most, ms. */

@@ -3,6 +3,9 @@ import type { Film } from '@/lib/review/film';
 import type { FilmPathView } from '@/lib/views/review-view';
 import type { StackReport, StackSource } from '@/stacks/stack-report';
 import type { FlowMeasures, ImageSize } from '@/tracking/flow-measures';
+import type { RehearsalFound } from '@/tracking/rehearsal/assess-rehearsal';
+import type { RehearsalAssessment } from '@/tracking/rehearsal/assessment';
+import type { RehearsalPlan } from '@/tracking/rehearsal/plan';
 import type { Conditions, Recipe, RecipeRequest, Spots, Tracks } from '@/tracking/types';
 
 // What is computed in child processes: plain data in, plain data out, no database, no network.
@@ -89,6 +92,24 @@ export interface ComposeStripsInput {
   strips: { path: string; film: Film; paths: FilmPathView[] }[];
 }
 
+export interface SimulateStackInput {
+  plan: RehearsalPlan;
+  /** Folder of the stack in whose frames particles are planted; null where all is simulated. */
+  sourceDir: string | null;
+  stackPath: string;
+  truthPath: string;
+}
+export interface SimulateStackOutput {
+  /** Length of the stack. */
+  bytes: number;
+}
+
+export interface AssessRehearsalInput extends Omit<RehearsalFound, 'spots'> {
+  truthPath: string;
+  /** Spots of all chunks, in order. */
+  chunks: Uint8Array[];
+}
+
 export interface Tasks {
   inspectStack: { input: InspectInput; output: StackReport };
   measureImage: { input: MeasureImageInput; output: MeasureImageOutput };
@@ -98,6 +119,8 @@ export interface Tasks {
   tryRecipe: { input: TryRecipeInput; output: TryRecipeOutput };
   /** How many were composed. */
   composeStrips: { input: ComposeStripsInput; output: number };
+  simulateStack: { input: SimulateStackInput; output: SimulateStackOutput };
+  assessRehearsal: { input: AssessRehearsalInput; output: RehearsalAssessment };
 }
 export type TaskName = keyof Tasks;
 export type TaskInput<K extends TaskName> = Tasks[K]['input'];

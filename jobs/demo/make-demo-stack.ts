@@ -3,7 +3,8 @@ import { createRenderer } from '@/tracking/simulate/render';
 import type { Scene, SceneCamera } from '@/tracking/simulate/scene';
 import { tangleScene } from '@/tracking/simulate/tangle-scene';
 import type { TangleOptions } from '@/tracking/simulate/tangle-options';
-import { writeTiff } from './write-tiff';
+import { omeDescription } from '../ome-description';
+import { writeTiff } from '../write-tiff';
 
 /** What a simulated recording shows; sizes and times come from the conditions. */
 export interface DemoScene {
@@ -78,18 +79,10 @@ export async function makeDemoStack(path: string, scene: DemoScene, conditions: 
     height: scene.heightPx,
     frames: scene.frames,
     frame: (index) => renderer.renderFrame(index),
-    description: omeDescription(scene, conditions),
+    description: omeDescription(
+        { width: scene.widthPx, height: scene.heightPx, frames: scene.frames },
+        conditions,
+      ),
   });
   return truth;
-}
-
-function omeDescription({ widthPx, heightPx, frames }: DemoScene, conditions: Conditions): string {
-  const pixelUm = Number((conditions.pixelSize_m * 1e6).toPrecision(9));
-  return (
-    '<?xml version="1.0" encoding="UTF-8"?>' +
-    '<OME xmlns="http://www.openmicroscopy.org/Schemas/OME/2016-06"><Image ID="Image:0">' +
-    `<Pixels ID="Pixels:0" DimensionOrder="XYCZT" Type="uint16" SizeX="${widthPx}" SizeY="${heightPx}" SizeC="1" SizeZ="1" SizeT="${frames}"` +
-    ` PhysicalSizeX="${pixelUm}" PhysicalSizeXUnit="µm" PhysicalSizeY="${pixelUm}" PhysicalSizeYUnit="µm"` +
-    ` TimeIncrement="${conditions.frameInterval_s}" TimeIncrementUnit="s"><TiffData/></Pixels></Image></OME>`
-  );
 }

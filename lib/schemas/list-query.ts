@@ -73,6 +73,8 @@ export const analysisListQuery = listQuery(['createdAt', 'updatedAt', 'finishedA
   campaign: idFilter('campaign'),
   run: idFilter('run'),
   recording: idFilter('recording'),
+  /** `no` leaves out what was made for rehearsals, `only` shows nothing else. */
+  rehearsals: z.enum(['no', 'only'], "rehearsals must be 'no' or 'only'.").optional(),
 });
 
 export const trackListQuery = listQuery(
@@ -88,6 +90,7 @@ export const candidateListQuery = listQuery(['event', 't0_s', 'qValue', 'minSepa
   accepted: z.enum(['true', 'false'], 'accepted must be true or false.').optional(),
 });
 
+export const rehearsalListQuery = listQuery(['createdAt', 'updatedAt', 'name'], { q: text });
 export const recipeListQuery = listQuery(['createdAt', 'name'], { q: text });
 export const memberListQuery = listQuery(['name', 'createdAt'], { q: text });
 export const tokenListQuery = listQuery(['createdAt', 'name', 'lastUsedAt'], {});

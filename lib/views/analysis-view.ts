@@ -2,7 +2,7 @@ import { z } from 'zod';
 import { REVIEW_STATES, VERDICTS } from '../review/verdict-words';
 import { recipeRequestSchema } from '../schemas/recipe';
 import { ANALYSIS_STAGES } from '../analysis-facts';
-import { itemFields, personSchema } from './common';
+import { itemFields, personSchema, rehearsalMarkSchema } from './common';
 import { detailsViewSchema } from './details-view';
 import { motionViewSchema } from './motion-view';
 
@@ -14,6 +14,8 @@ export const analysisViewSchema = z.object({
   recordingName: z.string(),
   runId: z.uuid(),
   campaignId: z.uuid(),
+  /** The rehearsal that its recording was made for; null for what a camera took. */
+  rehearsal: rehearsalMarkSchema.nullable(),
   state: z.enum(['waiting', 'running', 'done', 'failed', 'stopped']),
   stage: z.enum(ANALYSIS_STAGES),
   /** 0..1 over all stages. */

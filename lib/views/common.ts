@@ -13,6 +13,14 @@ export const itemFields = {
 export const personSchema = z.object({ id: z.uuid(), name: z.string() });
 export type PersonView = z.infer<typeof personSchema>;
 
+/** What everything says of itself that was made for a rehearsal: nothing in it was measured in a laboratory. */
+export const rehearsalMarkSchema = z.object({
+  id: z.uuid(),
+  name: z.string(),
+  kind: z.enum(['simulated', 'planted']),
+});
+export type RehearsalMark = z.infer<typeof rehearsalMarkSchema>;
+
 export const codedSchema = z.object({ code: z.string(), detail: z.string() });
 
 /** A page of a list; `nextCursor` is null at the end. */

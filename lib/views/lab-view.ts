@@ -98,6 +98,8 @@ export const storageViewSchema = z.object({
   recordings: z.int(),
   bytes: z.int(),
   arrivingBytes: z.int(),
+  /** Of them, what was made for rehearsals. */
+  rehearsals: z.object({ recordings: z.int(), bytes: z.int() }),
   freeBytes: z.int().nullable(),
   /** What the laboratory may keep. */
   quotaBytes: z.int(),

@@ -1,5 +1,6 @@
 import type { AnalysisView } from './analysis-view';
 import type { RecordingView } from './recording-view';
+import type { RehearsalView } from './rehearsal-view';
 import type { RunView } from './run-view';
 
 /** A run as those see it who may know that it exists, but not what was measured. */
@@ -48,4 +49,9 @@ export function recordingMetadata(recording: RecordingView): RecordingView {
 /** An analysis with its state, without results. */
 export function analysisMetadata(analysis: AnalysisView): AnalysisView {
   return { ...analysis, recipe: {}, conditions: {}, imageFacts: null, summary: null };
+}
+
+/** A rehearsal with its state, without what was planned and found. */
+export function rehearsalMetadata(rehearsal: RehearsalView): RehearsalView {
+  return { ...rehearsal, plan: {}, recipe: {}, headline: null };
 }

@@ -39,6 +39,8 @@ export interface OverviewView {
     waiting: number;
     failed: number;
     refused: number;
+    /** Rehearsals, which count nowhere else here. */
+    rehearsals: number;
     members: number;
   };
   arriving: ArrivingStack[];

@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { codedSchema, itemFields, personSchema } from './common';
+import { codedSchema, itemFields, personSchema, rehearsalMarkSchema } from './common';
 
 export const imageQualitySchema = z.object({
   noiseCounts: z.number(),
@@ -33,6 +33,8 @@ export const recordingViewSchema = z.object({
   warnings: z.array(codedSchema),
   /** Since when the stored bytes are known not to be those that were sent; null while they are. */
   damage: z.object({ since: z.iso.datetime(), detail: z.string() }).nullable(),
+  /** The rehearsal that it was made for; null for what a camera took. */
+  rehearsal: rehearsalMarkSchema.nullable(),
   createdBy: personSchema.nullable(),
   deletedAt: z.iso.datetime().nullable(),
   analyses: z.int(),

@@ -3,10 +3,11 @@ import type { AnalysisStage, AnalysisSummary, ImageFacts, WorkState } from '@/li
 import { notFound } from '@/lib/errors';
 import type { analysisListQuery } from '@/lib/schemas/list-query';
 import type { AnalysisView } from '@/lib/views/analysis-view';
-import type { ListView } from '@/lib/views/common';
+import type { ListView, RehearsalMark } from '@/lib/views/common';
 import type { Conditions, Recipe, RecipeRequest } from '@/tracking/types';
 import { listPage, type ListSource } from './list-page';
 import { iso, itemOf, personJson, type ItemRow, type Made } from './person';
+import { REHEARSAL_MARK, TAKEN } from './rehearsal-mark';
 import { selectRow } from './select';
 
 interface Row extends ItemRow, Made {
@@ -14,6 +15,7 @@ interface Row extends ItemRow, Made {
   recording_name: string;
   run_id: string;
   campaign_id: string;
+  rehearsal: RehearsalMark | null;
   state: WorkState;
   stage: AnalysisStage;
   progress: number;
@@ -39,7 +41,7 @@ const SELECT = `a.id, a.recording_id, g.name AS recording_name, g.run_id, r.camp
   (SELECT p.name || ' ' || p.version FROM recipes p WHERE p.id = a.recipe_id) AS recipe_name,
   (SELECT count(*)::int FROM spot_chunks s WHERE s.analysis_id = a.id) AS chunks_done,
   ceil(a.frames::float8 / greatest(a.chunk_frames, 1))::int AS chunks_total,
-  ${personJson('u')} AS created_by`;
+  ${REHEARSAL_MARK} AS rehearsal, ${personJson('u')} AS created_by`;
 const FROM = `analyses a JOIN recordings g ON g.id = a.recording_id JOIN runs r ON r.id = g.run_id
   LEFT JOIN users u ON u.id = a.created_by`;
 
@@ -50,6 +52,7 @@ function viewOf(row: Row): AnalysisView {
     recordingName: row.recording_name,
     runId: row.run_id,
     campaignId: row.campaign_id,
+    rehearsal: row.rehearsal,
     state: row.state,
     stage: row.stage,
     progress: row.progress,
@@ -75,6 +78,8 @@ export async function listAnalyses(
   const bind: unknown[] = [labId];
   const where = ['a.lab_id = $1', 'g.deleted_at IS NULL', 'r.deleted_at IS NULL'];
   if (query.state) where.push(`a.state = $${bind.push(query.state)}`);
+  if (query.rehearsals === 'no') where.push(TAKEN);
+  if (query.rehearsals === 'only') where.push(`NOT (${TAKEN})`);
   if (query.recording) where.push(`a.recording_id = $${bind.push(query.recording)}`);
   if (query.run) where.push(`g.run_id = $${bind.push(query.run)}`);
   if (query.campaign) where.push(`r.campaign_id = $${bind.push(query.campaign)}`);

@@ -44,7 +44,7 @@ const NEWEST = `(
 /** Runs of a laboratory side by side, and the steady law fitted to those of each campaign. */
 export async function compareRuns(labId: string, query: CompareQuery): Promise<CompareView> {
   const bind: unknown[] = [labId];
-  const where = ['r.lab_id = $1', 'r.deleted_at IS NULL', 'c.deleted_at IS NULL'];
+  const where = ['r.lab_id = $1', 'r.deleted_at IS NULL', 'c.deleted_at IS NULL', 'NOT c.rehearsal'];
   if (query.campaigns && query.campaigns.length > 0) {
     where.push(`r.campaign_id = ANY($${bind.push(query.campaigns)}::uuid[])`);
   }
@@ -64,7 +64,7 @@ export async function compareRuns(labId: string, query: CompareQuery): Promise<C
   const campaigns = await sequelize.query<{ id: string; name: string; runs: number }>(
     `SELECT c.id, c.name, count(r.id)::int AS runs FROM campaigns c
      JOIN runs r ON r.campaign_id = c.id AND r.deleted_at IS NULL
-     WHERE c.lab_id = $1 AND c.deleted_at IS NULL GROUP BY c.id ORDER BY c.created_at, c.id`,
+     WHERE c.lab_id = $1 AND c.deleted_at IS NULL AND NOT c.rehearsal GROUP BY c.id ORDER BY c.created_at, c.id`,
     { bind: [labId], type: QueryTypes.SELECT },
   );
   const runs = rows.slice(0, RUNS_MOST).map((row) => comparedRun(row, query.method));

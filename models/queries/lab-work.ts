@@ -38,7 +38,8 @@ export async function listJobs(
         CASE WHEN j.state = 'waiting' AND j.not_before > now() THEN j.not_before END AS next_at,
         coalesce((SELECT g.name FROM recordings g WHERE g.id = j.subject_id AND g.lab_id = j.lab_id),
           (SELECT g.name FROM analyses a JOIN recordings g ON g.id = a.recording_id
-           WHERE a.id = j.subject_id AND a.lab_id = j.lab_id)) AS recording_name`,
+           WHERE a.id = j.subject_id AND a.lab_id = j.lab_id),
+          (SELECT h.name FROM rehearsals h WHERE h.id = j.subject_id AND h.lab_id = j.lab_id)) AS recording_name`,
       from: 'job_runs j',
       where,
       bind,

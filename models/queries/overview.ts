@@ -2,6 +2,7 @@ import type { AnalysisSummary } from '@/lib/analysis-facts';
 import type { ArrivingStack, OverviewView, ResultRow } from '@/lib/views/overview-view';
 import type { Estimate } from '@/tracking/estimates/estimate';
 import { receivedByRecording } from './received-bytes';
+import { TAKEN } from './rehearsal-mark';
 import { selectRow, selectRows } from './select';
 
 /** Rows of each part of the overview; the rest is a click away. */
@@ -13,6 +14,7 @@ interface Counts {
   waiting: number;
   failed: number;
   refused: number;
+  rehearsals: number;
   members: number;
 }
 
@@ -20,14 +22,16 @@ interface Counts {
 export async function labOverview(labId: string, userId: string): Promise<OverviewView> {
   const counts = await selectRow<Counts>(
     `SELECT
-       (SELECT count(*)::int FROM campaigns WHERE lab_id = $1 AND deleted_at IS NULL) AS campaigns,
+       (SELECT count(*)::int FROM campaigns WHERE lab_id = $1 AND deleted_at IS NULL AND NOT rehearsal) AS campaigns,
        (SELECT count(*)::int FROM memberships WHERE lab_id = $1) AS members,
-       (SELECT count(*)::int FROM recordings g WHERE g.lab_id = $1 AND g.state = 'refused' AND g.deleted_at IS NULL) AS refused,
+       (SELECT count(*)::int FROM recordings g WHERE g.lab_id = $1 AND g.state = 'refused' AND g.deleted_at IS NULL
+          AND ${TAKEN}) AS refused,
+       (SELECT count(*)::int FROM rehearsals WHERE lab_id = $1 AND deleted_at IS NULL) AS rehearsals,
        count(*) FILTER (WHERE a.state = 'running')::int AS running,
        count(*) FILTER (WHERE a.state = 'waiting')::int AS waiting,
        count(*) FILTER (WHERE a.state = 'failed')::int AS failed
      FROM analyses a JOIN recordings g ON g.id = a.recording_id AND g.deleted_at IS NULL
-     WHERE a.lab_id = $1`,
+     WHERE a.lab_id = $1 AND ${TAKEN}`,
     [labId],
   );
   const [arriving, results] = await Promise.all([arrivingStacks(labId, userId), newResults(labId)]);
@@ -79,7 +83,7 @@ async function newResults(labId: string): Promise<ResultRow[]> {
         WHERE m.analysis_id = a.id ORDER BY m.tracks_revision DESC LIMIT 1) AS estimates
      FROM analyses a JOIN recordings g ON g.id = a.recording_id AND g.deleted_at IS NULL
        JOIN runs r ON r.id = g.run_id AND r.deleted_at IS NULL
-     WHERE a.lab_id = $1 AND a.state = 'done' AND a.summary IS NOT NULL
+     WHERE a.lab_id = $1 AND a.state = 'done' AND a.summary IS NOT NULL AND ${TAKEN}
      ORDER BY a.finished_at DESC, a.id DESC LIMIT ${ROWS}`,
     [labId],
   );

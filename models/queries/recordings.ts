@@ -8,11 +8,12 @@ import type {
   StackWarning,
 } from '@/lib/recording-facts';
 import type { recordingListQuery } from '@/lib/schemas/list-query';
-import type { ListView } from '@/lib/views/common';
+import type { ListView, RehearsalMark } from '@/lib/views/common';
 import type { RecordingView } from '@/lib/views/recording-view';
 import { containing, listPage, type ListSource } from './list-page';
 import { iso, itemOf, personJson, type ItemRow, type Made } from './person';
 import { receivedByRecording } from './received-bytes';
+import { REHEARSAL_MARK } from './rehearsal-mark';
 import { selectRow } from './select';
 
 interface Row extends ItemRow, Made {
@@ -36,6 +37,7 @@ interface Row extends ItemRow, Made {
   check_progress: number | null;
   damaged_since: Date | null;
   damage_detail: string | null;
+  rehearsal: RehearsalMark | null;
 }
 
 const SELECT = `g.id, g.run_id, r.campaign_id, g.name, g.state, g.kind, g.bytes, g.frames, g.width, g.height,
@@ -44,7 +46,7 @@ const SELECT = `g.id, g.run_id, r.campaign_id, g.name, g.state, g.kind, g.bytes,
   (SELECT count(*)::int FROM analyses a WHERE a.recording_id = g.id) AS analyses,
   (SELECT max(j.progress) FROM job_runs j WHERE g.state = 'checking' AND j.subject_id = g.id
      AND j.kind = 'ingest-recording' AND j.state IN ('waiting', 'running')) AS check_progress,
-  k.since AS damaged_since, k.detail AS damage_detail`;
+  k.since AS damaged_since, k.detail AS damage_detail, ${REHEARSAL_MARK} AS rehearsal`;
 const FROM =
   'recordings g JOIN runs r ON r.id = g.run_id LEFT JOIN users u ON u.id = g.created_by LEFT JOIN file_checks k ON k.recording_id = g.id';
 
@@ -76,6 +78,7 @@ function viewOf(row: Row, received: number | undefined): RecordingView {
       since: row.damaged_since.toISOString(),
       detail: row.damage_detail ?? '',
     },
+    rehearsal: row.rehearsal,
     createdBy: row.created_by,
     deletedAt: iso(row.deleted_at),
     analyses: row.analyses,

@@ -1,4 +1,5 @@
 import type { RunConditionsInput } from '@/lib/schemas/conditions';
+import type { Run } from '../run';
 
 /** Column of each condition of a run. */
 export const CONDITION_COLUMNS = {
@@ -34,3 +35,13 @@ export function conditionsOf(row: ConditionRow): RunConditionsInput {
 export function conditionColumns(input: Partial<RunConditionsInput>): Record<string, unknown> {
   return Object.fromEntries(FIELDS.map(([field, column]) => [column, input[field]]));
 }
+
+/** The same values by field of the model, null where nothing is sent: for a new run. */
+export function runFields(input: Partial<RunConditionsInput>): Partial<Run> {
+  const columns = Object.entries(conditionColumns(input));
+  return Object.fromEntries(columns.map(([column, value]) => [camel(column), value ?? null]));
+}
+
+/** Name of the model's field for a column. */
+const camel = (column: string): string =>
+  column.replace(/_([a-z0-9])/g, (_, letter: string) => letter.toUpperCase());

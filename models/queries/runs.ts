@@ -11,11 +11,16 @@ import { deriveRun } from '@/tracking/flow/derive-run';
 import type { RunConditions } from '@/tracking/flow/run-conditions';
 import { models } from '..';
 import { getSequelize } from '../database';
-import type { Run } from '../run';
 import { changeRowOnRecord, type Change } from './change-row';
 import { containing, listPage, type ListSource } from './list-page';
 import { iso, itemOf, personJson, type ItemRow, type Made } from './person';
-import { CONDITION_COLUMNS, conditionColumns, conditionsOf, type ConditionRow } from './run-columns';
+import {
+  CONDITION_COLUMNS,
+  conditionColumns,
+  conditionsOf,
+  runFields,
+  type ConditionRow,
+} from './run-columns';
 import { HEADLINE, headlineOf, type HeadlineRow } from './run-headline';
 import { selectRow } from './select';
 import { writeAudit } from './write-audit';
@@ -110,14 +115,10 @@ export async function createRun(
   input: RunCreate,
 ): Promise<RunView> {
   assertLikely(input, input.confirm);
-  const columns = conditionColumns(input);
-  const values = Object.fromEntries(
-    Object.entries(columns).map(([column, value]) => [camel(column), value ?? null]),
-  );
   const { labId, userId } = maker;
   const id = newId();
   const run = {
-    ...(values as Partial<Run>),
+    ...runFields(input),
     ...{ id, labId, campaignId, name: input.name, createdBy: userId },
     startedAt: input.startedAt ? new Date(input.startedAt) : null,
     tags: input.tags ?? [],
@@ -145,7 +146,3 @@ function assertLikely(input: Partial<RunConditionsInput>, confirm: string[] | un
   const errors = suspiciousConditions(input, confirm);
   if (errors.length > 0) throw new LabError('SUSPICIOUS', errors[0].message, { errors });
 }
-
-/** Name of the model's field for a column. */
-const camel = (column: string): string =>
-  column.replace(/_([a-z0-9])/g, (_, letter: string) => letter.toUpperCase());

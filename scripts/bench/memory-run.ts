@@ -1,7 +1,7 @@
 import { mkdir, rm, stat } from 'node:fs/promises';
 import { join } from 'node:path';
 import { ComputePool } from '@/jobs/compute/pool';
-import { writeTiff } from '@/jobs/demo/write-tiff';
+import { writeTiff } from '@/jobs/write-tiff';
 import { analyseStack, type LocalStage } from '@/jobs/local/analyse-stack';
 import { localStack } from '@/jobs/local/local-stack';
 import { mixedCamera, mixedScene } from '@/tracking/simulate/mixed-scene';

@@ -1,5 +1,5 @@
 import { closeSync, openSync, writeSync } from 'node:fs';
-import { writeTiff } from '@/jobs/demo/write-tiff';
+import { writeTiff } from '@/jobs/write-tiff';
 import { MIXED_SIZES, mixedCamera, mixedScene, type MixedSet } from '@/tracking/simulate/mixed-scene';
 import { createRenderer } from '@/tracking/simulate/render';
 import type { Scene, SceneCamera } from '@/tracking/simulate/scene';

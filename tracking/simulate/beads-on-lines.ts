@@ -1,15 +1,13 @@
 import { createRandom, mixSeed } from '../random';
 import { blink, tracerBrightness } from './blink';
 import { burstPath } from './burst-path';
-import { isotropicLines, normalsOf, type Box } from './isotropic-lines';
 import { longestStep, type MovingLine } from './moving-line';
+import { isotropicLines, normalsOf } from './isotropic-lines';
 import { KIND_TRAPPED } from './scene';
 import type { SceneBuilder } from './scene-builder';
-import { smoothPath, smoothPathReach } from './smooth-path';
+import { smoothPath } from './smooth-path';
+import { lineBox } from './tangle-boxes';
 import type { FilledTangleOptions } from './tangle-options';
-
-/** Room for bursts beyond the wobble, m. */
-const BURST_ROOM_M = 0.2e-3;
 
 /**
  * Isotropic lines that drift with the tangle and wobble as a whole, with trapped tracers along
@@ -21,20 +19,9 @@ const BURST_ROOM_M = 0.2e-3;
 export function addBeadsOnLines(builder: SceneBuilder, o: FilledTangleOptions, seed: number): MovingLine[] {
   if (o.lineDensityM2 === 0) return [];
   const { frames, frameIntervalS: dt, pixelSizeM: px } = o;
-  const durationS = frames * dt;
-  const room = smoothPathReach(o.wobbleMPerS, o.wobbleTimeS, durationS) + BURST_ROOM_M;
-  const drift = [o.flowDirection[0] * o.tangleVelocityMPerS, o.flowDirection[1] * o.tangleVelocityMPerS, 0];
+  const drift = [o.flowDirection[0] * o.tangleVelocityMPerS, o.flowDirection[1] * o.tangleVelocityMPerS];
   const half = o.sheetThicknessM / 2;
-  const size = [o.widthPx * px, o.heightPx * px];
-  const box: Box = {
-    low: [-room - Math.max(0, drift[0] * durationS), -room - Math.max(0, drift[1] * durationS), -half - room],
-    high: [
-      size[0] + room - Math.min(0, drift[0] * durationS),
-      size[1] + room - Math.min(0, drift[1] * durationS),
-      half + room,
-    ],
-  };
-  const lines = isotropicLines(createRandom(seed), box, o.lineDensityM2);
+  const lines = isotropicLines(createRandom(seed), lineBox(o), o.lineDensityM2);
   const xPx = new Float64Array(frames);
   const yPx = new Float64Array(frames);
   const visible = new Uint8Array(frames);

@@ -4,11 +4,9 @@ import { followCapture } from './follow-capture';
 import type { MovingLine } from './moving-line';
 import { KIND_FREE, type SceneCapture } from './scene';
 import type { SceneBuilder } from './scene-builder';
-import { smoothPath, smoothPathReach } from './smooth-path';
+import { smoothPath } from './smooth-path';
+import { AXIS_OVER_MEAN, freeBox } from './tangle-boxes';
 import type { FilledTangleOptions } from './tangle-options';
-
-/** Laminar flow between plates: 1.5 times the mean on the axis, 0 at the walls. */
-const AXIS_OVER_MEAN = 1.5;
 
 /**
  * Free tracers carried by the normal fluid: a parabola across the channel, a slow wobble in all
@@ -27,14 +25,10 @@ export function addFreeTracers(
   const width = o.widthPx * px;
   const height = o.heightPx * px;
   const half = o.sheetThicknessM / 2;
-  const durationS = frames * dt;
-  const room = smoothPathReach(o.freeWobbleMPerS, o.freeWobbleTimeS, durationS);
-  const travel = AXIS_OVER_MEAN * o.vnMPerS * durationS;
-  const lowX = -room - Math.max(0, fx * travel);
-  const highX = width + room - Math.min(0, fx * travel);
-  const lowY = -room - Math.max(0, fy * travel);
-  const highY = height + room - Math.min(0, fy * travel);
-  const highZ = half + room;
+  const {
+    low: [lowX, lowY],
+    high: [highX, highY, highZ],
+  } = freeBox(o);
   const perVolume = o.freeTracersPerFrame / (width * height * o.sheetThicknessM);
   const count = createRandom(seed).poisson(perVolume * (highX - lowX) * (highY - lowY) * 2 * highZ);
 

@@ -1,5 +1,6 @@
 import { pixelShares } from '../pixel-gaussian';
 import { createRandom, mixSeed } from '../random';
+import { blurOfPoints, blurSteps } from './motion-blur';
 import type { Scene, SceneCamera } from './scene';
 import { sheetLight } from './sheet-light';
 
@@ -17,7 +18,8 @@ export interface Renderer {
 /**
  * A camera in front of a scene: pixel-integrated Gaussian spots on the background of a light
  * sheet, Poisson noise of the photoelectrons, Gaussian read noise, gain, offset, rounding and
- * clipping to the bit depth. The noise depends on the camera's seed and the frame only.
+ * clipping to the bit depth; with an open shutter spots are drawn out along their way, the true
+ * position being that of mid-exposure. The noise depends on the camera's seed and the frame only.
  */
 export function createRenderer(scene: Scene, camera: SceneCamera): Renderer {
   const { widthPx: width, heightPx: height } = scene;
@@ -30,6 +32,7 @@ export function createRenderer(scene: Scene, camera: SceneCamera): Renderer {
   const sharesY = new Float64Array(side);
   const unused = new Float64Array(side);
   const most = 2 ** camera.bitDepth - 1;
+  const blur = camera.exposureFrames ? blurOfPoints(scene, camera.exposureFrames) : null;
 
   const addSpot = (x: number, y: number, brightness: number) => {
     const x0 = Math.round(x) - reach;
@@ -49,7 +52,17 @@ export function createRenderer(scene: Scene, camera: SceneCamera): Renderer {
       throw new RangeError(`The scene has frames 0 to ${scene.frames - 1}. Received ${frameIndex}.`);
     }
     electrons.set(background);
-    for (const p of pointsOfFrame[frameIndex]) addSpot(scene.xPx[p], scene.yPx[p], scene.brightnessE[p]);
+    for (const p of pointsOfFrame[frameIndex]) {
+      const steps = blur ? blurSteps(blur, p, camera.spotSigmaPx) : 1;
+      for (let step = 0; step < steps; step++) {
+        const from = blur ? (step + 0.5) / steps - 0.5 : 0;
+        addSpot(
+          scene.xPx[p] + (blur ? from * blur.xPx[p] : 0),
+          scene.yPx[p] + (blur ? from * blur.yPx[p] : 0),
+          scene.brightnessE[p] / steps,
+        );
+      }
+    }
     return electrons;
   };
 

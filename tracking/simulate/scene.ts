@@ -62,4 +62,6 @@ export interface SceneCamera {
   offsetCounts: number;
   bitDepth: 8 | 12 | 16;
   seed: number;
+  /** Share of the frame interval during which the shutter is open, 0 to 1; left out, spots stand still. */
+  exposureFrames?: number;
 }

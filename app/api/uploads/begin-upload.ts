@@ -5,6 +5,7 @@ import { LabError, notFound } from '@/lib/errors';
 import { isId } from '@/lib/ids';
 import { uploadMetadata } from '@/lib/uploads/upload-metadata';
 import { assertNotDeleted } from '@/models/queries/change-row';
+import { assertTakes } from '@/models/queries/rehearsal-mark';
 import { getRun } from '@/models/queries/runs';
 import { createUpload, forgetUpload, type UploadRow } from '@/models/queries/uploads';
 import { aboutUpload } from './about-upload';
@@ -34,6 +35,7 @@ export async function beginUpload(request: Request, viewer: Viewer): Promise<Ans
   const withBody = bringsPiece(headers, bytes);
   if (!isId(metadata.run)) throw notFound('run');
   assertNotDeleted(await getRun(viewer.labId, metadata.run), 'run');
+  await assertTakes(viewer.labId, { runId: metadata.run });
   await assertDiskHasRoom(bytes);
   const expiresAt = newExpiry();
   const row = await createUpload(viewer, { runId: metadata.run, bytes, metadata, sentMetadata, expiresAt });

@@ -7,11 +7,13 @@ import { problemSchema } from '@/lib/views/common';
 import { models } from '@/models';
 import { addExport } from '@/models/queries/exports';
 import { addMail } from '@/models/queries/mails';
+import { addRehearsal } from '@/models/queries/rehearsal-work';
 import { closeSessionLocks } from '@/models/session-locks';
 import { call, routeModule, routePaths, webSettings } from '../../helpers/call-route';
 import { freshDatabase, type FreshDatabase } from '../../helpers/fresh-database';
 import { makeAnalysis, makeRecording, makeRun, type LabRows } from '../../helpers/lab-rows';
 import { makeAssignment, makeCandidates } from '../../helpers/candidates';
+import { REHEARSAL_PLAN } from '../../helpers/rehearsal-plan';
 import { makeTestLab, type TestLab } from '../../helpers/test-lab';
 
 /** Ids of one thing of each kind, by the name of the parameter that takes it. */
@@ -112,7 +114,22 @@ async function makeThings(): Promise<Things> {
       transaction,
     ),
   );
+  const rehearsalId = await database.sequelize.transaction((transaction) =>
+    addRehearsal(
+      {
+        labId: own.labId,
+        userId: maker.userId,
+        name: 'Rehearsal',
+        kind: 'simulated',
+        plan: REHEARSAL_PLAN,
+        recipe: {},
+        sourceRecordingId: null,
+      },
+      transaction,
+    ),
+  );
   return {
+    rehearsalId,
     mailId: mail,
     jobId: job.id,
     campaignId: campaign.id,
@@ -148,6 +165,7 @@ const BODIES: Partial<Record<RouteKey, unknown>> = {
   'POST /exports': { analyses: ['01890a5d-ac96-774b-bcce-b302099a8057'] },
   'POST /recipes': { name: 'Recipe', fields: {} },
   'PATCH /people/{memberId}': { roles: ['analyst'] },
+  'POST /rehearsals': { name: 'New', conditions: REHEARSAL_PLAN.conditions, scene: { lineDensity_m2: 1e7 } },
   'POST /people': { name: 'New', email: 'new@lab.test', roles: ['analyst'] },
   'POST /tokens': { name: 'New' },
   'PUT /candidates/{candidateId}/verdict': { verdict: 'yes' },

@@ -7,7 +7,7 @@ import { MarginNote } from '@/components/ui/margin-note';
 import { ProgressThread } from '@/components/ui/progress-thread';
 import { Facts, Section } from '@/components/ui/sheet';
 import { formatBytes } from '@/lib/format/bytes';
-import { formatCount } from '@/lib/format/count';
+import { countOf, formatCount } from '@/lib/format/count';
 import { labStorage } from '@/models/queries/storage';
 import { LabFrame } from '../lab-frame';
 
@@ -35,6 +35,10 @@ export default async function StoragePage() {
           items={[
             { name: 'Recordings', value: formatCount(recordings) },
             { name: 'Stored', value: formatBytes(bytes) },
+            {
+              name: 'Of it',
+              value: `${countOf(storage.rehearsals.recordings, 'rehearsal')}, ${formatBytes(storage.rehearsals.bytes)}`,
+            },
             { name: 'Arriving', value: formatBytes(arrivingBytes) },
             { name: 'May keep', value: formatBytes(quotaBytes) },
             { name: 'Free on disk', value: freeBytes === null ? 'unknown' : formatBytes(freeBytes) },

@@ -3,6 +3,7 @@ import { may } from '@/auth/viewer';
 import { runMetadata } from '@/lib/views/metadata-only';
 import { getCampaign } from '@/models/queries/campaigns';
 import { assertNotDeleted } from '@/models/queries/change-row';
+import { assertTakes } from '@/models/queries/rehearsal-mark';
 import { createRun, listRuns } from '@/models/queries/runs';
 import { memberRoute, methods } from '@/app/api/member-route';
 
@@ -16,6 +17,7 @@ export const { GET, POST, PUT, PATCH, DELETE } = methods({
   }),
   POST: memberRoute('POST /campaigns/{campaignId}/runs', async ({ viewer, params, body }) => {
     assertNotDeleted(await getCampaign(viewer.labId, params.campaignId), 'campaign');
+    await assertTakes(viewer.labId, { campaignId: params.campaignId });
     const run = await createRun(viewer, params.campaignId, body);
     return created(run, `/api/v1/runs/${run.id}`);
   }),

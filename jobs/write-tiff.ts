@@ -7,7 +7,7 @@ export interface TiffStack {
   height: number;
   frames: number;
   /** Counts of a frame, row by row; the array may be reused. */
-  frame(index: number): Uint16Array;
+  frame(index: number): Uint16Array | Promise<Uint16Array>;
   /** Text of the first page's description, such as OME metadata. */
   description?: string;
 }
@@ -59,7 +59,7 @@ export async function writeTiff(path: string, stack: TiffStack): Promise<void> {
     fields.push([TAG.offset, LONG, 1, pixelsAt], [TAG.samples, SHORT, 1, 1], [TAG.rows, LONG, 1, height], [TAG.bytes, LONG, 1, pixelBytes]); // prettier-ignore
     const next = pixelsAt + pixelBytes;
     await write(directory(fields, page < frames - 1 ? next : 0));
-    await write(littleEndian(stack.frame(page)));
+    await write(littleEndian(await stack.frame(page)));
     at = next;
   }
   out.end();
