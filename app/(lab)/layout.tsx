@@ -18,6 +18,7 @@ export default async function LabLayout({ children }: { children: ReactNode }) {
     { href: '/campaigns', label: 'Campaigns' },
     ...(may(viewer, 'see-data') ? [{ href: '/analyses', label: 'Analyses' }] : []),
     ...(may(viewer, 'see-review') ? [{ href: '/review', label: 'Review', count: waiting }] : []),
+    ...(may(viewer, 'see-data') ? [{ href: '/rehearsals', label: 'Rehearsals' }] : []),
     ...(may(viewer, 'compare') ? [{ href: '/compare', label: 'Compare' }] : []),
     { href: '/lab', label: 'Lab' },
   ];

@@ -9,6 +9,7 @@ import { Answer } from '@/components/data/answer';
 import { useCandidates } from '@/components/data/use-candidates';
 import { useMeasures } from '@/components/data/use-measures';
 import { useProgress } from '@/components/data/use-progress';
+import { RehearsalLine } from '@/components/rehearsals/rehearsal-mark';
 import { EmptyState, StaleLine } from '@/components/ui/page-states';
 import { PageTitle, Section } from '@/components/ui/sheet';
 import { StateWord } from '@/components/ui/state-bead';
@@ -105,6 +106,7 @@ export function AnalysisSheet({
       >
         {analysis.recordingName}, {analysis.recipeName ?? 'unnamed recipe'}
       </PageTitle>
+      <RehearsalLine rehearsal={analysis.rehearsal} />
       {isError ? <StaleLine what="The progress may be out of date.">It is asked for again.</StaleLine> : null}
       <ProgressPanel analysis={analysis} stopReason={stopReason} />
       <div className="grid grid-cols-[minmax(0,1fr)] gap-x-9 gap-y-6 pt-3 aside:grid-cols-[minmax(0,1fr)_484px]">

@@ -3,6 +3,7 @@
 import Link from 'next/link';
 import type { ComponentProps, ReactNode } from 'react';
 import { Answer } from '@/components/data/answer';
+import { RehearsalMark } from '@/components/rehearsals/rehearsal-mark';
 import { useList } from '@/components/lists/use-list';
 import { Moment } from '@/components/ui/moment';
 import { EmptyState } from '@/components/ui/page-states';
@@ -84,6 +85,7 @@ export function AnalysisRow({ analysis }: { analysis: AnalysisView }) {
       <Cell head>
         <Link href={`/analyses/${analysis.id}`}>{analysis.recordingName}</Link>
         <span className="block text-small text-ink-3">{analysis.recipeName ?? 'unnamed recipe'}</span>
+        <RehearsalMark rehearsal={analysis.rehearsal} />
         {error ? <span className="block text-small text-red-text">{error.detail}</span> : null}
       </Cell>
       <Cell>

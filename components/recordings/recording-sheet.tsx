@@ -5,6 +5,7 @@ import { useViewerStore } from '@/components/canvas/use-viewer';
 import { viewedRecording } from '@/components/canvas/viewed-recording';
 import { ViewerPanel, type ViewedRecording } from '@/components/canvas/viewer-panel';
 import { useRecording } from '@/components/data/use-recording';
+import { RehearsalLine } from '@/components/rehearsals/rehearsal-mark';
 import { ButtonLink } from '@/components/ui/button';
 import { MarginNote } from '@/components/ui/margin-note';
 import { Moment } from '@/components/ui/moment';
@@ -83,6 +84,7 @@ export function RecordingSheet({
       >
         {recording.name}
       </PageTitle>
+      <RehearsalLine rehearsal={recording.rehearsal} />
       {query.isError ? (
         <StaleLine what="This may be out of date.">{query.error.message} It is asked for again.</StaleLine>
       ) : null}

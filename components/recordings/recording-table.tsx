@@ -2,6 +2,7 @@
 
 import Link from 'next/link';
 import { Answer } from '@/components/data/answer';
+import { RehearsalMark } from '@/components/rehearsals/rehearsal-mark';
 import { useList } from '@/components/lists/use-list';
 import { Moment } from '@/components/ui/moment';
 import { EmptyState } from '@/components/ui/page-states';
@@ -83,6 +84,7 @@ function RecordingRow({ recording }: { recording: RecordingView }) {
     <Row>
       <Cell head>
         <Link href={`/recordings/${recording.id}`}>{recording.name}</Link>
+        <RehearsalMark rehearsal={recording.rehearsal} />
         {recording.refusal ? (
           <span className="block text-small text-red-text">{recording.refusal.detail}</span>
         ) : null}

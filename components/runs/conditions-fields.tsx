@@ -51,11 +51,14 @@ export interface ConditionsFieldsProps {
   errorOf: (path: string) => string | null;
   warningOf: (path: string) => string | null;
   disabled: boolean;
+  /** False where the number of tracers is asked for elsewhere. */
+  asksTracersPerArea?: boolean;
 }
 
 /** Every condition of a run in four groups. */
 export function ConditionsFields(props: ConditionsFieldsProps) {
   const { form, change, onText, onUnit, onLeave, errorOf, warningOf, disabled } = props;
+  const { asksTracersPerArea = true } = props;
   const number = (field: ConditionName, label: string, help?: ReactNode) => (
     <QuantityField
       field={field}
@@ -160,7 +163,7 @@ export function ConditionsFields(props: ConditionsFieldsProps) {
         </datalist>
         {number('tracer.diameter_m', 'Diameter')}
         {number('tracer.density_kg_m3', 'Density')}
-        {number('tracersPerArea_m2', 'Tracers per area')}
+        {asksTracersPerArea ? number('tracersPerArea_m2', 'Tracers per area') : null}
       </FieldGroup>
       <FieldGroup legend="Light and camera">
         {number('sheetThickness_m', 'Sheet thickness')}

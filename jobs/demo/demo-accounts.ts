@@ -13,6 +13,8 @@ const fileSchema = z.object({
   ),
   /** Recordings made so far, by their key. */
   recordings: z.record(z.string(), z.uuid()),
+  /** Rehearsals made so far, likewise; files of earlier versions have none. */
+  rehearsals: z.record(z.string(), z.uuid()).default({}),
 });
 export type DemoFile = z.infer<typeof fileSchema>;
 
@@ -47,7 +49,7 @@ export function newDemoFile(): DemoFile {
     email,
     password: randomBytes(PASSWORD_BYTES).toString('base64url'),
   }));
-  return { laboratory: DEMO_LAB.name, accounts, recordings: {} };
+  return { laboratory: DEMO_LAB.name, accounts, recordings: {}, rehearsals: {} };
 }
 
 /** How to sign in, for the terminal. */

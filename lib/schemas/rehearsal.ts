@@ -6,12 +6,16 @@ import { nameSchema } from './text';
 
 /** A number inside the bounds of the plan's field; the sentence names field, bounds and what was typed. */
 function planNumber(field: PlanField) {
-  const error = (issue: { input?: unknown }) => planFieldError(field, issue.input) ?? 'This value can not be.';
+  const error = (issue: { input?: unknown }) =>
+    planFieldError(field, issue.input) ?? 'This value can not be.';
   const { least, most } = PLAN_BOUNDS[field];
-  return z.number({ error }).refine((value) => planFieldError(field, value) === null, { error }).meta({
-    minimum: least,
-    maximum: most,
-  });
+  return z
+    .number({ error })
+    .refine((value) => planFieldError(field, value) === null, { error })
+    .meta({
+      minimum: least,
+      maximum: most,
+    });
 }
 
 /** What is simulated or planted where nothing else is asked for. */
@@ -26,7 +30,12 @@ export const SCENE_DEFAULTS = {
   meetings: 6,
 } as const;
 
-export const CAMERA_DEFAULTS = { spotSizePx: 1.2, background_e: 12, readNoise_e: 1.5, edgeLight: 0.5 } as const;
+export const CAMERA_DEFAULTS = {
+  spotSizePx: 1.2,
+  background_e: 12,
+  readNoise_e: 1.5,
+  edgeLight: 0.5,
+} as const;
 
 export const REHEARSAL_SEED = 1;
 
@@ -70,5 +79,5 @@ export const rehearsalCreateSchema = z.strictObject({
 export type RehearsalCreate = z.infer<typeof rehearsalCreateSchema>;
 
 /** What a person has typed so far, kept as it is: short texts by the name of their field. */
-export const rehearsalDraftSchema = z.record(z.string().max(60), z.string().max(400)).refine((form) => Object.keys(form).length <= 80, 'At most 80 fields.'); // prettier-ignore
+export const rehearsalDraftSchema = z.record(z.string().max(60), z.string().max(400)).refine((form) => Object.keys(form).length <= 120, 'At most 120 fields.'); // prettier-ignore
 export type RehearsalDraft = z.infer<typeof rehearsalDraftSchema>;

@@ -138,7 +138,7 @@ describe.each(THEMES)('every page in the %s theme', (theme) => {
   );
 
   it('says what to do where there is nothing yet', async () => {
-    const pages = ['/', '/campaigns', '/analyses', '/review', '/compare', '/lab/tokens'];
+    const pages = ['/', '/campaigns', '/analyses', '/review', '/compare', '/rehearsals', '/lab/tokens'];
     await look(empty, 'principal_investigator', pages, theme, 'wide', 'empty');
   }, 60_000);
 

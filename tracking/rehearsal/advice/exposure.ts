@@ -28,7 +28,9 @@ export function exposureAdvice({ made, blurPx, spotSizePx, assessed }: Facts): A
       },
     ];
   }
-  const { found } = assessed.detection;
+  const { found, truePoints, missedCrowded } = assessed.detection;
+  // More light doesn't part images that lie over each other.
+  if (missedCrowded > 0.5 * (1 - found.value) * truePoints) return [];
   if (found.value >= FOUND_WANTED || blurPx > WAY_SHORT_SIGMAS * spotSizePx) return [];
   const longer = Math.min(frameIntervalS / exposureS, blurPx > 0 ? most / blurPx : Infinity);
   if (!(longer > 1.5)) return [];

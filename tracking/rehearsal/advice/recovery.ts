@@ -6,7 +6,7 @@ import { about, percent } from './words';
 
 /** False spots may exceed what was asked for by this factor before it is said (Poisson scatter is far smaller). */
 const FALSE_FACTOR = 3;
-const FALSE_LEAST_PER_FRAME = 0.3;
+const FALSE_LEAST_PER_FRAME = 0.5;
 const OVERSTATED = 1.15;
 const ACCURACY_WANTED = 0.9;
 const UNDECIDED_MOST = 0.25;
@@ -16,7 +16,12 @@ const PURITY_WANTED = 0.8;
 const EVENT_POINTS = 8;
 
 /** Steps that the recipe forbids, and spots that are nothing. */
-export function recipeAdvice({ longStepPx, recipe, assessed }: Pick<AdviceFacts, 'longStepPx' | 'recipe' | 'assessed'>): Advice[] { // prettier-ignore
+export function recipeAdvice({
+  longStepPx,
+  recipe,
+  assessed,
+}: Pick<AdviceFacts, 'longStepPx' | 'recipe' | 'assessed'>): Advice[] {
+  // prettier-ignore
   const advice: Advice[] = [];
   if (longStepPx > recipe.longestStepPx) {
     advice.push({
@@ -26,7 +31,11 @@ export function recipeAdvice({ longStepPx, recipe, assessed }: Pick<AdviceFacts,
     });
   }
   const { falsePerFrame, falseAskedPerFrame } = assessed.detection;
-  if (falsePerFrame !== null && falsePerFrame > Math.max(FALSE_LEAST_PER_FRAME, FALSE_FACTOR * falseAskedPerFrame)) { // prettier-ignore
+  if (
+    falsePerFrame !== null &&
+    falsePerFrame > Math.max(FALSE_LEAST_PER_FRAME, FALSE_FACTOR * falseAskedPerFrame)
+  ) {
+    // prettier-ignore
     advice.push({
       about: 'recipe',
       weight: 'change',

@@ -43,7 +43,13 @@ export default async function AnalysisPage({ params }: Props) {
   return (
     <>
       <PathThread
-        levels={pathLevels(viewer, { campaign, run, recording, analysis: { id: analysis.id, name } })}
+        levels={pathLevels(viewer, {
+          campaign,
+          run,
+          rehearsal: analysis.rehearsal,
+          recording,
+          analysis: { id: analysis.id, name },
+        })}
       />
       <Sheet>
         {viewed ? (

@@ -22,7 +22,7 @@ export default async function RecordingPage({ params }: Props) {
   const seeData = may(viewer, 'see-data');
   return (
     <>
-      <PathThread levels={pathLevels(viewer, { campaign, run, recording })} />
+      <PathThread levels={pathLevels(viewer, { campaign, run, recording, rehearsal: recording.rehearsal })} />
       <Suspense>
         <RecordingSheet
           initial={recording}

@@ -24,7 +24,7 @@ export default async function TryOutPage({ params }: Props) {
   const back = `/recordings/${recording.id}`;
   return (
     <>
-      <PathThread levels={pathLevels(viewer, { campaign, run, recording })} />
+      <PathThread levels={pathLevels(viewer, { campaign, run, recording, rehearsal: recording.rehearsal })} />
       <Sheet>
         <PageTitle
           aside={
