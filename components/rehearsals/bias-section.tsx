@@ -27,7 +27,7 @@ export function BiasSection({
   ]);
   if (truth === null) {
     return (
-      <Section title="Line density">
+      <Section flush title="Line density">
         <p className="py-2 text-ink-2">
           The lines of the recording itself are in sight and nobody knows them: no bias can be told from
           planted particles. A simulated rehearsal tells it.
@@ -37,6 +37,7 @@ export function BiasSection({
   }
   return (
     <Section
+      flush
       title="Line density against the truth"
       count={
         <>

@@ -2,7 +2,7 @@
 
 import { ChartFrame } from '@/components/charts/chart-frame';
 import { Plot } from '@/components/charts/plot';
-import { BandMark, DotMark, LabelMark, LineMark } from '@/components/charts/plot-marks';
+import { BandMark, DotMark, LineMark } from '@/components/charts/plot-marks';
 import { Section } from '@/components/ui/sheet';
 import { formatCount } from '@/lib/format/count';
 import type { AssessmentView } from '@/lib/views/rehearsal-view';
@@ -27,7 +27,7 @@ export function DetectionSection({ detection }: { detection: Detection }) {
       ? 'false spots can’t be told where real tracers are in sight'
       : `${falsePerFrame.toFixed(2)} false spots a frame, ${falseAskedPerFrame} asked for`;
   return (
-    <Section title="Completeness" count={`of ${formatCount(truePoints)} tracer images`}>
+    <Section flush title="Completeness" count={`of ${formatCount(truePoints)} tracer images`}>
       <p className="pb-2">
         {shareText(found)} of all tracer images are found; {falseWords}.
       </p>
@@ -91,14 +91,14 @@ export function ErrorSection({ detection }: { detection: Detection }) {
   const { classes, isolated, errorPx, boundPx, statedPx, errorOverStated } = detection;
   if (errorPx === null || boundPx === null || statedPx === null) {
     return (
-      <Section title="Positions">
+      <Section flush title="Positions">
         <p className="py-2 text-ink-2">No isolated tracer was found: nothing can be said of errors.</p>
       </Section>
     );
   }
   const known = classes.filter((one) => one.errorPx !== null && one.boundPx !== null && one.isolated >= 10);
   return (
-    <Section title="Positions" count={`${formatCount(isolated)} isolated images, error per axis`}>
+    <Section flush title="Positions" count={`${formatCount(isolated)} isolated images, error per axis`}>
       <p className="pb-2">
         Off by {errorPx.toFixed(3)} px r.m.s., {(errorPx / boundPx).toFixed(2)} times the Cramér-Rao bound;
         the stated errors are {statedPx.toFixed(3)} px, and error over stated error is{' '}
@@ -119,6 +119,7 @@ function ErrorPlot({ classes }: { classes: Detection['classes'] }) {
     <ChartFrame
       label={`Position error against brightness: ${first.errorPx!.toFixed(3)} px of the faintest, ${classes.at(-1)!.errorPx!.toFixed(3)} px of the brightest, beside the bound and the stated errors.`}
       fileName="position-error-by-brightness"
+      caption="Error with beads, bound dotted, stated error dashed."
       table={{
         columns: [
           { name: 'brightness', unit: 'electrons' },
@@ -152,14 +153,6 @@ function ErrorPlot({ classes }: { classes: Detection['classes'] }) {
         <LineMark points={series('statedPx')} stroke="var(--violet)" dash="6 4" />
         <LineMark points={series('errorPx')} stroke="var(--ink)" widthPx={1.4} />
         <DotMark points={series('errorPx')} fill="var(--ink)" />
-        <LabelMark x={first.meanE} y={first.errorPx!} dxPx={26} dyPx={-14} words="error" />
-        <LabelMark
-          x={first.meanE}
-          y={first.boundPx!}
-          dxPx={4}
-          dyPx={40}
-          words="bound, dotted; stated, dashed"
-        />
       </Plot>
     </ChartFrame>
   );

@@ -25,6 +25,7 @@ export function EventsSection({
   const rows = [...events.events].sort((a, b) => a.t0S - b.t0S);
   return (
     <Section
+      flush
       title="Meetings"
       count={efficiency ? `${shareText(efficiency)} found` : 'none were made'}
       more={{ href: `/analyses/${analysisId}#candidates`, label: 'All candidates' }}

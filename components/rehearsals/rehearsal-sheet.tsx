@@ -98,14 +98,14 @@ function Result({
   return (
     <>
       <AdviceSection advice={assessment.advice} />
-      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-9 pt-[22px] desk:grid-cols-2">
+      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-9 gap-y-[22px] pt-[22px] desk:grid-cols-2">
         <DetectionSection detection={assessment.detection} />
         <ErrorSection detection={assessment.detection} />
       </div>
       <div className="pt-[22px]">
         <BiasSection estimates={assessment.estimates} truth={assessment.trueLineDensityM2} />
       </div>
-      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-9 pt-[22px] desk:grid-cols-2">
+      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-9 gap-y-[22px] pt-[22px] desk:grid-cols-2">
         <TrackScoresSection tracks={assessment.tracks} />
         <PopulationTable populations={assessment.populations} />
       </div>

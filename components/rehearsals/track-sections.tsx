@@ -18,6 +18,7 @@ export function TrackScoresSection({ tracks }: { tracks: AssessmentView['tracks'
   ];
   return (
     <Section
+      flush
       title="Tracks"
       count={`${formatCount(tracks.tracks)} tracks of ${countOf(tracks.trueTracks, 'tracer')}`}
     >
@@ -65,7 +66,7 @@ export function PopulationTable({ populations }: { populations: AssessmentView['
       ? 'Not both kinds are decided on: no accuracy can be told.'
       : `Of the decided tracks ${percentText(balancedAccuracy)} are named rightly (mean of both kinds); ${percentText(undecidedShare)} are left undecided.`;
   return (
-    <Section title="Populations" count="tracks by what they follow and what they are called">
+    <Section flush title="Populations" count="tracks by what they follow and what they are called">
       <Table label="Populations: what tracks follow and what they are called" density="dense">
         <thead>
           <tr>

@@ -28,7 +28,7 @@ const HEAD_NUMBERS = 5;
 const HEAD_BYTES = 4 * HEAD_NUMBERS;
 
 type Head = Omit<RehearsalTruth, 'scene'> & {
-  scene: Pick<Scene, 'widthPx' | 'heightPx' | 'frames' | 'events'> & { lineDensityM2: number | null };
+  scene: Pick<Scene, 'widthPx' | 'heightPx' | 'frames' | 'events' | 'captures'> & { lineDensityM2: number | null };
 };
 
 const padded = (bytes: number) => Math.ceil(bytes / 4) * 4;
@@ -38,9 +38,9 @@ const padded = (bytes: number) => Math.ceil(bytes / 4) * 4;
  * (32-bit integers), x, y, brightness (32-bit floats), kind (a byte each).
  */
 export function encodeTruth({ scene, ...rest }: RehearsalTruth): Uint8Array {
-  const { widthPx, heightPx, frames, events, tracers } = scene;
+  const { widthPx, heightPx, frames, events, captures, tracers } = scene;
   const lineDensityM2 = Number.isNaN(scene.lineDensityM2) ? null : scene.lineDensityM2;
-  const head: Head = { ...rest, scene: { widthPx, heightPx, frames, events, lineDensityM2 } };
+  const head: Head = { ...rest, scene: { widthPx, heightPx, frames, events, captures, lineDensityM2 } };
   const json = asciiBytes(JSON.stringify(head));
   const points = scene.frame.length;
   const at = HEAD_BYTES + padded(json.length);

@@ -20,6 +20,7 @@ function movingScene(stepPx: number): Scene {
     kind: Uint8Array.of(0),
     line: Int32Array.of(-1),
     events: [],
+    captures: [],
     lineDensityM2: Number.NaN,
   };
 }

@@ -10,5 +10,6 @@ export const percent = (share: number): string => {
   return `${value >= 10 || value === 0 ? Math.round(value) : Number(value.toPrecision(1))} %`;
 };
 
-export const micrometres = (metres: number): string => `${about(metres * 1e6)} µm`;
+/** Three digits: lengths are compared with each other. */
+export const micrometres = (metres: number): string => `${Number((metres * 1e6).toPrecision(3))} µm`;
 export const milliseconds = (seconds: number): string => `${about(seconds * 1e3)} ms`;
