@@ -34,7 +34,10 @@ export async function stopRehearsal(
     const recording = await models().Recording.findOne({ where: { id: recordingId, labId }, transaction });
     if (recording?.state === 'checking') {
       await stopJobsOf(recordingId, transaction);
-      const refusal = { code: 'STOPPED', detail: 'The rehearsal was stopped before its frames were checked.' };
+      const refusal = {
+        code: 'STOPPED',
+        detail: 'The rehearsal was stopped before its frames were checked.',
+      };
       await recording.update(
         { state: 'refused', refusal, revision: recording.revision + 1 },
         { transaction },
@@ -46,7 +49,8 @@ export async function stopRehearsal(
       transaction,
     });
     for (const analysis of analyses) {
-      if (analysis.state === 'waiting' || analysis.state === 'running') await stopAnalysis(analysis, transaction); // prettier-ignore
+      if (analysis.state === 'waiting' || analysis.state === 'running')
+        await stopAnalysis(analysis, transaction); // prettier-ignore
       // The comparison is work on the analysis too.
       else await stopJobsOf(analysis.id, transaction);
     }

@@ -21,7 +21,9 @@ export function WorkList() {
     queryFn: async ({ signal }) => {
       const lists = await Promise.all(
         ORDER.map((state) =>
-          api<ListView<AnalysisView>>(`/api/v1/analyses?state=${state}&rehearsals=no&limit=${ROWS}`, { signal }),
+          api<ListView<AnalysisView>>(`/api/v1/analyses?state=${state}&rehearsals=no&limit=${ROWS}`, {
+            signal,
+          }),
         ),
       );
       return lists.flatMap(({ items }) => items).slice(0, ROWS);

@@ -80,9 +80,9 @@ export async function makeDemoStack(path: string, scene: DemoScene, conditions: 
     frames: scene.frames,
     frame: (index) => renderer.renderFrame(index),
     description: omeDescription(
-        { width: scene.widthPx, height: scene.heightPx, frames: scene.frames },
-        conditions,
-      ),
+      { width: scene.widthPx, height: scene.heightPx, frames: scene.frames },
+      conditions,
+    ),
   });
   return truth;
 }

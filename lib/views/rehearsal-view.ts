@@ -116,9 +116,7 @@ export const assessmentSchema = z.object({
       note: z.string(),
     }),
   ),
-  advice: z.array(
-    z.object({ about: z.string(), weight: z.enum(['change', 'know']), sentence: z.string() }),
-  ),
+  advice: z.array(z.object({ about: z.string(), weight: z.enum(['change', 'know']), sentence: z.string() })),
 });
 
 /** A rehearsal with the comparison of each analysis of its recording, the newest first. */

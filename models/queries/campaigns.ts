@@ -58,7 +58,11 @@ export async function listCampaigns(
   query: z.output<typeof campaignListQuery>,
 ): Promise<ListView<CampaignView>> {
   const bind: unknown[] = [labId];
-  const where = ['c.lab_id = $1', 'NOT c.rehearsal', `c.deleted_at IS ${query.deleted === 'only' ? 'NOT ' : ''}NULL`];
+  const where = [
+    'c.lab_id = $1',
+    'NOT c.rehearsal',
+    `c.deleted_at IS ${query.deleted === 'only' ? 'NOT ' : ''}NULL`,
+  ];
   if (query.q)
     where.push(`(c.name ILIKE $${bind.push(containing(query.q))} OR c.description ILIKE $${bind.length})`);
   if (query.tag) where.push(`$${bind.push(query.tag)} = ANY(c.tags)`);

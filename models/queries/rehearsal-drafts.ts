@@ -3,7 +3,11 @@ import type { Transaction } from 'sequelize';
 import { execute, selectRow } from './select';
 
 /** What a person has typed of a rehearsal and not sent; null for nothing. */
-export async function readDraft(labId: string, userId: string): Promise<{ form: RehearsalDraft; updatedAt: string } | null> { // prettier-ignore
+export async function readDraft(
+  labId: string,
+  userId: string,
+): Promise<{ form: RehearsalDraft; updatedAt: string } | null> {
+  // prettier-ignore
   const row = await selectRow<{ form: RehearsalDraft; updated_at: Date }>(
     'SELECT form, updated_at FROM rehearsal_drafts WHERE lab_id = $1 AND user_id = $2',
     [labId, userId],

@@ -8,7 +8,11 @@ export const REHEARSAL_MARK = `(SELECT json_build_object('id', h.id, 'name', h.n
 export const TAKEN = 'NOT EXISTS (SELECT 1 FROM rehearsals h WHERE h.recording_id = g.id)';
 
 /** @throws LabError STATE for a run or campaign of rehearsals: what a camera took does not belong there. */
-export async function assertTakes(labId: string, where: { runId: string } | { campaignId: string }): Promise<void> { // prettier-ignore
+export async function assertTakes(
+  labId: string,
+  where: { runId: string } | { campaignId: string },
+): Promise<void> {
+  // prettier-ignore
   const row = await selectRow(
     'runId' in where
       ? `SELECT 1 AS one FROM runs r JOIN campaigns c ON c.id = r.campaign_id WHERE r.lab_id = $1 AND r.id = $2 AND c.rehearsal`

@@ -5,6 +5,7 @@ import type { ReviewSetView } from '@/lib/views/review-view';
 import { outcomeJoins, type Sight } from './candidate-sight';
 import { listPage } from './list-page';
 import { itemOf, type ItemRow } from './person';
+import { TAKEN } from './rehearsal-mark';
 import { waitsSql } from './review-queue';
 import { selectRow } from './select';
 import { signedOffSql } from './signed-off';
@@ -48,6 +49,8 @@ export async function listReviewSets(
     'r.deleted_at IS NULL',
     'k.deleted_at IS NULL',
     'n.candidates > 0',
+    // What was made for a rehearsal waits for nobody; it is mixed in where readers are measured.
+    TAKEN,
   ];
   if (query.campaign) where.push(`k.id = $${bind.push(query.campaign)}`);
   const page = await listPage<Row>(
@@ -100,7 +103,7 @@ export async function reviewCounts(
      FROM candidates c JOIN analyses a ON a.id = c.analysis_id AND a.state = 'done'
        JOIN recordings g ON g.id = a.recording_id AND g.deleted_at IS NULL
        JOIN runs r ON r.id = g.run_id AND r.deleted_at IS NULL ${outcomeJoins('$2')}
-     WHERE c.lab_id = $1 AND NOT (${signedOffSql})`,
+     WHERE c.lab_id = $1 AND ${TAKEN} AND NOT (${signedOffSql})`,
     [labId, userId],
   );
   return row!;

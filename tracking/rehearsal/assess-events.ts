@@ -12,7 +12,10 @@ const SAME_MEETING_FRAMES = 4;
 const AROUND_FRAMES = 12;
 
 /** What of a candidate is compared. */
-export type JudgedCandidate = Pick<ReconnectionCandidate, 'trackA' | 'trackB' | 't0S' | 'accepted' | 'failed'>;
+export type JudgedCandidate = Pick<
+  ReconnectionCandidate,
+  'trackA' | 'trackB' | 't0S' | 'accepted' | 'failed'
+>;
 
 /**
  * Which true meetings were found and which candidates are true. Of planted particles a candidate is

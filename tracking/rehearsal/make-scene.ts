@@ -110,7 +110,12 @@ function brightnessOf({ scene }: RehearsalPlan, light: LightFacts): number {
  * What a simulated rehearsal is made of: the scene, its camera, and what the page needs to know of them.
  * @throws PlanRangeError
  */
-export function makeTruth(plan: RehearsalPlan, camera = cameraOf(plan), kind: RehearsalTruth['kind'] = 'simulated'): RehearsalTruth { // prettier-ignore
+export function makeTruth(
+  plan: RehearsalPlan,
+  camera = cameraOf(plan),
+  kind: RehearsalTruth['kind'] = 'simulated',
+): RehearsalTruth {
+  // prettier-ignore
   const options = tangleOf(plan, camera);
   const scene: Scene = tangleScene(options);
   const { conditions } = plan;

@@ -28,7 +28,9 @@ const HEAD_NUMBERS = 5;
 const HEAD_BYTES = 4 * HEAD_NUMBERS;
 
 type Head = Omit<RehearsalTruth, 'scene'> & {
-  scene: Pick<Scene, 'widthPx' | 'heightPx' | 'frames' | 'events' | 'captures'> & { lineDensityM2: number | null };
+  scene: Pick<Scene, 'widthPx' | 'heightPx' | 'frames' | 'events' | 'captures'> & {
+    lineDensityM2: number | null;
+  };
 };
 
 const padded = (bytes: number) => Math.ceil(bytes / 4) * 4;

@@ -27,11 +27,7 @@ function roomyBox(o: FilledTangleOptions, roomM: number, travelM: number): Box {
   const size = [o.widthPx * o.pixelSizeM, o.heightPx * o.pixelSizeM];
   return {
     low: [-roomM - Math.max(0, travel[0]), -roomM - Math.max(0, travel[1]), -half - roomM],
-    high: [
-      size[0] + roomM - Math.min(0, travel[0]),
-      size[1] + roomM - Math.min(0, travel[1]),
-      half + roomM,
-    ],
+    high: [size[0] + roomM - Math.min(0, travel[0]), size[1] + roomM - Math.min(0, travel[1]), half + roomM],
   };
 }
 

@@ -6,7 +6,12 @@ import { stopRehearsal } from '@/jobs/stop-rehearsal';
 import { LabError } from '@/lib/errors';
 import { conditionsOfView } from '@/lib/run-form/conditions-of-view';
 import type { RunConditionsInput } from '@/lib/schemas/conditions';
-import { CAMERA_DEFAULTS, REHEARSAL_SEED, SCENE_DEFAULTS, type RehearsalCreate } from '@/lib/schemas/rehearsal';
+import {
+  CAMERA_DEFAULTS,
+  REHEARSAL_SEED,
+  SCENE_DEFAULTS,
+  type RehearsalCreate,
+} from '@/lib/schemas/rehearsal';
 import type { RehearsalView } from '@/lib/views/rehearsal-view';
 import { getSequelize } from '@/models/database';
 import { assertWithinQuota } from '@/models/queries/quota';
@@ -111,7 +116,8 @@ function sceneOf({ scene = {} }: RehearsalCreate, usual: SceneBase): RehearsalPl
 
 function complete(conditions: RunConditionsInput): RehearsalPlan['conditions'] {
   const { pixelSize_m, frameInterval_s } = conditions;
-  if (pixelSize_m && frameInterval_s) return { ...(conditions as RunConditions), pixelSize_m, frameInterval_s };
+  if (pixelSize_m && frameInterval_s)
+    return { ...(conditions as RunConditions), pixelSize_m, frameInterval_s };
   const errors = [
     ...(pixelSize_m ? [] : [{ path: 'pixelSize_m', message: 'Enter the pixel size.' }]),
     ...(frameInterval_s ? [] : [{ path: 'frameInterval_s', message: 'Enter the frame rate.' }]),
@@ -141,7 +147,10 @@ export async function stopRehearsalOf(viewer: Viewer, id: string): Promise<Rehea
   const { labId, userId } = viewer;
   const { createdBy } = await getRehearsal(labId, id);
   assertMayTo(viewer, 'stop-analysis', [createdBy?.id ?? null]);
-  await stopRehearsal(labId, id, (transaction) =>
+  await stopRehearsal(
+    labId,
+    id,
+    (transaction) =>
     writeAudit({ labId, userId, action: 'rehearsal.stopped', subjectKind: 'rehearsal', subjectId: id }, transaction), // prettier-ignore
   );
   return getRehearsal(labId, id);

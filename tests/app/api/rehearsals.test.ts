@@ -87,7 +87,9 @@ describe('a simulated rehearsal', () => {
     const recording = await callJson('GET', `/api/v1/recordings/${first.recordingId}`, { token });
     const mark = { id: first.id, name: 'Gentle heat', kind: 'simulated' };
     expect(recording.body.rehearsal).toEqual(mark);
-    const analyses = await callJson<{ items: { rehearsal: unknown }[] }>('GET', '/api/v1/analyses', { token });
+    const analyses = await callJson<{ items: { rehearsal: unknown }[] }>('GET', '/api/v1/analyses', {
+      token,
+    });
     expect(analyses.body.items.map((item) => item.rehearsal)).toContainEqual(mark);
     const own = await callJson<{ items: unknown[] }>('GET', '/api/v1/analyses?rehearsals=no', { token });
     expect(own.body.items).toEqual([]);

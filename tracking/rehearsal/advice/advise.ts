@@ -27,5 +27,8 @@ const RULES: readonly ((facts: AdviceFacts) => Advice[])[] = [
 /** All that follows from the numbers, what stands in the way first. */
 export function advise(facts: AdviceFacts): Advice[] {
   const all = RULES.flatMap((rule) => rule(facts));
-  return [...all.filter(({ weight }) => weight === 'change'), ...all.filter(({ weight }) => weight === 'know')];
+  return [
+    ...all.filter(({ weight }) => weight === 'change'),
+    ...all.filter(({ weight }) => weight === 'know'),
+  ];
 }

@@ -24,7 +24,8 @@ export function estimateAdvice({ assessed }: Pick<AdviceFacts, 'assessed'>): Adv
       {
         about: 'estimates',
         weight: 'change',
-        sentence: 'No method can be used to estimate the line density in this plan; each says why in the table.',
+        sentence:
+          'No method can be used to estimate the line density in this plan; each says why in the table.',
       },
     ];
   }
