@@ -103,7 +103,7 @@ const POINTS_MOST = 4_000_000;
  * @throws PlanRangeError
  */
 export function checkPlan({ conditions, scene }: RehearsalPlan): void {
-  const { widthPx, heightPx, frames, seeding_m2, brightness_e, snr } = scene;
+  const { widthPx, heightPx, frames, brightness_e, snr } = scene;
   const pixels = widthPx * heightPx * frames;
   if (pixels > PIXELS_MOST) {
     throw new PlanRangeError(
