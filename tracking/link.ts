@@ -1,21 +1,17 @@
 import { assembleTracks } from './linking/assemble-tracks';
 import { BRIGHTNESS_UNTOLD, measureBrightness } from './linking/brightness-statistics';
-import { joinPieces } from './linking/join-pieces';
 import type { LinkLimits } from './linking/link-limits';
 import { linkPass } from './linking/link-pass';
+import { linkInWindows } from './linking/link-windows';
 import { firstStatistics, measureStatistics } from './linking/motion-statistics';
 import { createSpotTable } from './linking/spot-table';
 import { statisticsSample } from './linking/statistics-sample';
-import { trackLinks } from './linking/track-links';
-import { untangle } from './linking/untangle';
 import type { Recipe, Spots, Tracks } from './types';
 
 /** What linking needs of a recipe. */
 export type LinkRecipe = Pick<Recipe, 'longestStepPx' | 'mayVanishFrames' | 'shortestTrackFrames'> &
-  Partial<Pick<Recipe, 'spotSizePx'>>;
+  Partial<Pick<Recipe, 'spotSizePx' | 'effort'>>;
 
-/** A second look at close approaches knows what the first one untangled; a third changes next to nothing. */
-const ROUNDS = 2;
 /** Size of a tracer's image where the recipe doesn't say, px. */
 const SPOT_SIZE_PX = 1.3;
 
@@ -29,9 +25,14 @@ export interface RecordingSize {
 /**
  * Tracks from spots. Each frame is one assignment problem, solved exactly: which predicted tracer
  * owns which spot, priced against tracers being missed and spots being new or false. Links are
- * made twice: with wide assumptions to learn how the tracers of this recording move and how long
- * their brightness lasts, then with what was learned. After that pieces of tracks are joined and
- * close approaches of two tracks decided anew from both sides. The same spots give the same tracks, in order of first frame, then y, then x.
+ * made twice: with wide assumptions (and, where tracers drift farther than they are apart, the
+ * drift that displacements pile up at) to learn the mean flow, how each population moves and how
+ * long brightness lasts, then with what was learned. After that pieces of tracks are joined and
+ * close approaches of two tracks decided anew from both sides. With `effort` quick all tracers are
+ * of one population, and pieces are joined but no approach is decided anew.
+ *
+ * A long recording is linked some frames at a time, with margins that overlap, so that working
+ * memory does not grow with its length. The same spots give the same tracks, in order of first frame, then y, then x.
  *
  * @param spots of the whole recording, by frame, then y, then x.
  * @throws RangeError when spots are out of order or outside the recording's frames.
@@ -49,23 +50,15 @@ export function linkSpots(spots: Spots, size: RecordingSize, recipe: LinkRecipe)
     longestStepPx: recipe.longestStepPx,
     mayVanishFrames: recipe.mayVanishFrames,
   };
+  const quick = recipe.effort === 'quick';
   const sample = statisticsSample(spots);
-  const rough = linkPass(
-    createSpotTable(sample, BRIGHTNESS_UNTOLD),
-    limits,
-    firstStatistics(spots, limits),
-    BRIGHTNESS_UNTOLD,
-  );
-  const motion = measureStatistics(sample, rough, limits);
+  const assumed = firstStatistics(sample, limits);
+  const rough = linkPass(createSpotTable(sample, BRIGHTNESS_UNTOLD), limits, assumed, BRIGHTNESS_UNTOLD);
+  const motion = measureStatistics(sample, rough, limits, assumed, quick ? 1 : 2);
   const brightness = measureBrightness(sample, rough);
-  const table = createSpotTable(spots, brightness);
-  const links = trackLinks(linkPass(table, limits, motion, brightness));
-  for (let round = 0; round < ROUNDS; round++) {
-    joinPieces(table, links, limits, motion, brightness);
-    untangle(table, links, limits, motion, brightness, recipe.spotSizePx ?? SPOT_SIZE_PX, round > 0);
-  }
-  joinPieces(table, links, limits, motion, brightness);
-  return assembleTracks(spots, links.before, recipe.shortestTrackFrames);
+  const spotSizePx = recipe.spotSizePx ?? SPOT_SIZE_PX;
+  const links = linkInWindows(spots, limits, { motion, brightness, spotSizePx, quick });
+  return assembleTracks(spots, links, recipe.shortestTrackFrames);
 }
 
 function checkOrder(spots: Spots, frames: number): void {

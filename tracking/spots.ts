@@ -87,10 +87,7 @@ export function concatSpots(runs: readonly Spots[]): Spots {
   const out = emptySpots(runs.reduce((sum, run) => sum + run.count, 0));
   let at = 0;
   for (const run of runs) {
-    if (at > 0 && run.count > 0 && run.frame[0] < out.frame[at - 1]) {
-      throw new RangeError(`Spots of frame ${run.frame[0]} came after those of frame ${out.frame[at - 1]}.`);
-    }
-    copySpots(run, out, at, run.count);
+    appendRun(run, out, at);
     at += run.count;
   }
   return out;
@@ -151,6 +148,32 @@ export function decodeSpots(bytes: Uint8Array): Spots {
   const [xPx, yPx, sxPx, syPx, brightness, snr] = columns;
   const flags = new Uint8Array(aligned, at + 4 * count, count);
   return { count, frame, xPx, yPx, sxPx, syPx, brightness, snr, flags };
+}
+
+/**
+ * Spots of runs of frames, given as bytes, put one behind the other. The runs are taken out of the list
+ * one by one, so that never more than one of them is held beside what was decoded.
+ *
+ * @throws RangeError like `decodeSpots`, and where a run begins before the one in front of it ends.
+ */
+export function takeEncodedRuns(runs: Uint8Array[]): Spots {
+  const countOf = (bytes: Uint8Array) =>
+    bytes.length < HEADER_BYTES ? 0 : new DataView(bytes.buffer, bytes.byteOffset).getUint32(8, true);
+  const out = emptySpots(runs.reduce((sum, bytes) => sum + countOf(bytes), 0));
+  let at = 0;
+  for (let bytes = runs.shift(); bytes; bytes = runs.shift()) {
+    const run = decodeSpots(bytes);
+    appendRun(run, out, at);
+    at += run.count;
+  }
+  return out;
+}
+
+function appendRun(run: Spots, out: Spots, at: number): void {
+  if (at > 0 && run.count > 0 && run.frame[0] < out.frame[at - 1]) {
+    throw new RangeError(`Spots of frame ${run.frame[0]} came after those of frame ${out.frame[at - 1]}.`);
+  }
+  copySpots(run, out, at, run.count);
 }
 
 function copySpots(from: Spots, to: Spots, at: number, count: number): void {

@@ -39,7 +39,10 @@ test('cells of the linking give every spot within reach, and none twice', () => 
         const x = size.width * random.uniform();
         const y = size.height * random.uniform();
         const reach = 0.1 + 6 * random.uniform();
-        const found = Array.from(cells.found.subarray(0, cells.find(x, y, reach)), (spot) => from + spot);
+        const found = Array.from(
+          cells.found.subarray(0, cells.find(x - reach, y - reach, x + reach, y + reach)),
+          (spot) => from + spot,
+        );
         const given = new Set(found);
         expect(given.size).toBe(found.length);
         const missing = range(from, size.count).filter(

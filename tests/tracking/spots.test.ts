@@ -1,5 +1,5 @@
 import { expect, test } from 'vitest';
-import { concatSpots, createSpotSink, decodeSpots, encodeSpots } from '@/tracking/spots';
+import { concatSpots, createSpotSink, decodeSpots, encodeSpots, takeEncodedRuns } from '@/tracking/spots';
 
 function someSpots(frames: number[]) {
   const sink = createSpotSink(1);
@@ -61,4 +61,16 @@ test('runs of frames join in order, and out of order they are refused', () => {
   expect(() => concatSpots([someSpots([5]), someSpots([4])])).toThrow(
     'Spots of frame 4 came after those of frame 5.',
   );
+});
+
+test('runs given as bytes join as they would decoded, and leave the list', () => {
+  const runs = [someSpots([0, 1]), someSpots([]), someSpots([1, 4])];
+  const bytes = runs.map(encodeSpots);
+  expect(takeEncodedRuns(bytes)).toEqual(concatSpots(runs));
+  expect(bytes).toEqual([]);
+  expect(takeEncodedRuns([]).count).toBe(0);
+  expect(() => takeEncodedRuns([encodeSpots(someSpots([5])), encodeSpots(someSpots([4]))])).toThrow(
+    RangeError,
+  );
+  expect(() => takeEncodedRuns([encodeSpots(someSpots([5])).subarray(0, 20)])).toThrow(/bytes/);
 });

@@ -1,4 +1,5 @@
 import { POINT_BRIDGED, type Spots, type Tracks } from '../types';
+import type { TrackLinks } from './track-links';
 
 /**
  * Tracks from links. A frame between two linked spots in which the tracer was missed gets a point
@@ -6,9 +7,11 @@ import { POINT_BRIDGED, type Spots, type Tracks } from '../types';
  * brightness (NaN). Tracks with fewer than `shortest` measured points are left out. Spots come by
  * frame, then y, then x, so the order of first spots is the order of tracks.
  */
-export function assembleTracks(spots: Spots, before: Int32Array, shortest: number): Tracks {
-  const after = new Int32Array(spots.count).fill(-1);
-  for (let s = 0; s < spots.count; s++) if (before[s] >= 0) after[before[s]] = s;
+export function assembleTracks(
+  spots: Spots,
+  { before, after }: Pick<TrackLinks, 'before' | 'after'>,
+  shortest: number,
+): Tracks {
   const firsts: number[] = [];
   const start: number[] = [0];
   for (let s = 0; s < spots.count; s++) {

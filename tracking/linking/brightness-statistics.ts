@@ -24,7 +24,7 @@ export const BRIGHTNESS_UNTOLD: BrightnessStatistics = {
 /** Frames over which the slow change of brightness is measured. */
 const LAG_FRAMES = 8;
 const SAMPLES_LEAST = 30;
-const SAMPLES_MOST = 20_000;
+const SAMPLES_MOST = 10_000;
 /**
  * Tracers must differ by so much of what spots of one tracer differ by, or the cue is left alone;
  * and by more than three standard errors (a variance from n squares by their median: 2.4 / sqrt n).

@@ -1,8 +1,11 @@
+import { flowAt } from './flow-field';
 import {
   B,
   BRIGHTNESS_OUTLIERS,
   BV,
   MISSED_MOST,
+  MODE,
+  MODES,
   PP,
   PV,
   STILL_THERE,
@@ -11,6 +14,7 @@ import {
   VV,
   VX,
   VY,
+  W,
   X,
   Y,
 } from './tracer-filter';
@@ -22,15 +26,33 @@ const UNRESOLVED_SIZES = 1.1;
 
 /** Tracers of which two may share a spot, or one may be two pieces of track. */
 export class PairFilter extends TracerFilter {
+  private readonly usual = new Float64Array(2);
+  /** The tracers at hand with their populations taken together: X, Y, PP of one, then of the other. */
+  private readonly first = new Float64Array(MODE);
+  private readonly second = new Float64Array(MODE);
+
   /**
    * Cost of tracer `i`, predicted to the frame of a later track's first spot, being that track, of
    * which `later` read backwards ends in slot `j`; relative to one ending and another starting.
    */
   joinCost(i: number, later: TracerFilter, j: number): number {
-    const { values, motion } = this;
     const a = STRIDE * i;
     const b = STRIDE * j;
-    const back = later.values;
+    let ratio = 0;
+    for (let m = 0; m < this.modes; m++) ratio += this.joinRatio(m, a, later.values, b);
+    if (this.told) {
+      const { values: back } = later;
+      ratio *= this.brightnessRatio(this.values[a + B], this.values[a + BV], back[b + B], back[b + BV]);
+    }
+    return this.base[Math.min(this.missed[i], MISSED_MOST)] - 2 * Math.log(ratio + 1e-300);
+  }
+
+  /** Likelihood of both pieces being one tracer of population `m` over that of their being two of any. */
+  private joinRatio(m: number, i: number, back: Float64Array, j: number): number {
+    const { values } = this;
+    const population = this.motion.populations[m];
+    const a = i + MODES + MODE * m;
+    const b = j + MODES + MODE * m;
     const dx = back[b + X] - values[a + X];
     const dy = back[b + Y] - values[a + Y];
     const dvx = -back[b + VX] - values[a + VX];
@@ -38,20 +60,21 @@ export class PairFilter extends TracerFilter {
     const pp = values[a + PP] + back[b + PP];
     const pv = values[a + PV] - back[b + PV];
     const vv = values[a + VV] + back[b + VV];
-    const jump = this.jumpVariance;
+    const jump = population.jumpVariance;
     const plain = pairDensity(dx, dy, dvx, dvy, pp, pv, vv);
     // It may have jumped on the way to that spot, or at the spot.
     const jumped =
       pairDensity(dx, dy, dvx, dvy, pp + jump, pv + jump, vv + jump) +
       pairDensity(dx, dy, dvx, dvy, pp, pv, vv + jump);
     // What the later track's velocity would be worth if the track was a new one.
-    const fresh = motion.startVariance + back[b + VV];
-    const ox = -back[b + VX] - motion.meanX;
-    const oy = -back[b + VY] - motion.meanY;
+    const fresh = population.startVariance + back[b + VV];
+    flowAt(population.flow, back[b + X], back[b + Y], this.usual);
+    const ox = -back[b + VX] - this.usual[0];
+    const oy = -back[b + VY] - this.usual[1];
     const common = Math.exp((-0.5 * (ox * ox + oy * oy)) / fresh) / (2 * Math.PI * fresh);
-    let ratio = ((1 - 2 * motion.jumpShare) * plain + motion.jumpShare * jumped) / (common + 1e-300);
-    if (this.told) ratio *= this.brightnessRatio(values[a + B], values[a + BV], back[b + B], back[b + BV]);
-    return this.base[Math.min(this.missed[i], MISSED_MOST)] - 2 * Math.log(ratio + 1e-300);
+    const both = (values[a + W] * back[b + W]) / population.share;
+    const { jumpShare } = population;
+    return (both * ((1 - 2 * jumpShare) * plain + jumpShare * jumped)) / (common + 1e-300);
   }
 
   private brightnessRatio(mean: number, variance: number, laterMean: number, laterVariance: number): number {
@@ -72,13 +95,15 @@ export class PairFilter extends TracerFilter {
    * @param sizePx standard deviation of a tracer's image.
    */
   mergedCost(i: number, j: number, s: number, sizePx: number): number {
-    const { values, table, motion } = this;
+    const { values, table, motion, first, second } = this;
     const a = STRIDE * i;
     const b = STRIDE * j;
-    const apartX = values[a + X] - values[b + X];
-    const apartY = values[a + Y] - values[b + Y];
+    this.together(a, first);
+    this.together(b, second);
+    const apartX = first[X] - second[X];
+    const apartY = first[Y] - second[Y];
     const reach = (UNRESOLVED_SIZES * sizePx) ** 2;
-    const spread = reach + values[a + PP] + values[b + PP];
+    const spread = reach + first[PP] + second[PP];
     const unresolved = (reach / spread) * Math.exp((-0.5 * (apartX * apartX + apartY * apartY)) / spread);
     const share = this.shareOfLight(a, b);
     let bright = 1;
@@ -90,13 +115,19 @@ export class PairFilter extends TracerFilter {
       const ratio = Math.exp(0.5 * (table.lnCommon[s] - (off * off) / total)) / Math.sqrt(total);
       bright = (1 - BRIGHTNESS_OUTLIERS) * ratio + BRIGHTNESS_OUTLIERS;
     }
-    const dx = table.xPx[s] - values[b + X] - share * apartX;
-    const dy = table.yPx[s] - values[b + Y] - share * apartY;
+    const dx = table.xPx[s] - second[X] - share * apartX;
+    const dy = table.yPx[s] - second[Y] - share * apartY;
     const squared = dx * dx + dy * dy;
-    const narrow =
-      share * share * values[a + PP] + (1 - share) * (1 - share) * values[b + PP] + 2 * table.variance[s];
-    const wide = narrow + 0.5 * this.jumpVariance;
-    const jumpShare = 2 * motion.jumpShare;
+    const narrow = share * share * first[PP] + (1 - share) * (1 - share) * second[PP] + 2 * table.variance[s];
+    // Either of them may have jumped.
+    let jumpShare = 0;
+    let jumpVariance = 0;
+    for (let m = 0; m < this.modes; m++) {
+      const weight = values[a + MODES + MODE * m + W] + values[b + MODES + MODE * m + W];
+      jumpShare += weight * this.jumpShare[m];
+      jumpVariance += weight * this.jumpShare[m] * this.jumpVariance[m];
+    }
+    const wide = narrow + (0.5 * jumpVariance) / jumpShare;
     const density =
       ((1 - jumpShare) * Math.exp((-0.5 * squared) / narrow)) / (2 * Math.PI * narrow) +
       (jumpShare * Math.exp((-0.5 * squared) / wide)) / (2 * Math.PI * wide);
@@ -109,21 +140,26 @@ export class PairFilter extends TracerFilter {
 
   /** Corrects tracers `i` and `j` by a spot that is both in one: their middle is there, and they are near each other. */
   updateMerged(i: number, j: number, s: number, sizePx: number): void {
-    const { values, table } = this;
+    const { table } = this;
     const a = STRIDE * i;
     const b = STRIDE * j;
     const share = this.shareOfLight(a, b);
     const other = 1 - share;
-    const dx = table.xPx[s] - share * values[a + X] - other * values[b + X];
-    const dy = table.yPx[s] - share * values[a + Y] - other * values[b + Y];
-    const middle = share * share * values[a + PP] + other * other * values[b + PP] + 2 * table.variance[s];
-    correct(values, a, share, middle, dx, dy);
-    correct(values, b, other, middle, dx, dy);
-    const apartX = values[a + X] - values[b + X];
-    const apartY = values[a + Y] - values[b + Y];
-    const spread = values[a + PP] + values[b + PP] + (UNRESOLVED_SIZES * sizePx) ** 2;
-    correct(values, a, 1, spread, -apartX, -apartY);
-    correct(values, b, 1, spread, apartX, apartY);
+    const { first, second } = this;
+    this.together(a, first);
+    this.together(b, second);
+    const noise = 2 * table.variance[s];
+    for (let m = 0, of = MODES; m < this.modes; m++, of += MODE) {
+      this.pull(a + of, share, second, other, table.xPx[s], table.yPx[s], noise);
+      this.pull(b + of, other, first, share, table.xPx[s], table.yPx[s], noise);
+    }
+    this.together(a, first);
+    this.together(b, second);
+    const near = (UNRESOLVED_SIZES * sizePx) ** 2;
+    for (let m = 0, of = MODES; m < this.modes; m++, of += MODE) {
+      this.pull(a + of, 1, second, -1, 0, 0, near);
+      this.pull(b + of, 1, first, -1, 0, 0, near);
+    }
     this.missed[i] = 0;
     this.missed[j] = 0;
   }
@@ -135,9 +171,45 @@ export class PairFilter extends TracerFilter {
 
   /** Squared distance of spot `s` from where tracer `i` is expected. */
   offSquared(i: number, s: number): number {
-    const dx = this.table.xPx[s] - this.values[STRIDE * i + X];
-    const dy = this.table.yPx[s] - this.values[STRIDE * i + Y];
+    this.together(STRIDE * i, this.first);
+    const dx = this.table.xPx[s] - this.first[X];
+    const dy = this.table.yPx[s] - this.first[Y];
     return dx * dx + dy * dy;
+  }
+
+  /** Corrects the tracer at `of` by the place (x, y) of `weight` times it and `rest` times the other one. */
+  private pull(
+    of: number,
+    weight: number,
+    other: Float64Array,
+    rest: number,
+    x: number,
+    y: number,
+    noise: number,
+  ): void {
+    const { values } = this;
+    const dx = x - weight * values[of + X] - rest * other[X];
+    const dy = y - weight * values[of + Y] - rest * other[Y];
+    const total = weight * weight * values[of + PP] + rest * rest * other[PP] + noise;
+    correct(values, of, weight, total, dx, dy);
+  }
+
+  /** Place and its variance (per axis) of the tracer at `at`, whichever population it is of. */
+  private together(at: number, out: Float64Array): void {
+    const { values } = this;
+    const a = at + MODES;
+    out[X] = values[a + X];
+    out[Y] = values[a + Y];
+    out[PP] = values[a + PP];
+    if (this.modes === 1) return;
+    const b = a + MODE;
+    const share = values[b + W];
+    const dx = values[b + X] - values[a + X];
+    const dy = values[b + Y] - values[a + Y];
+    out[X] += share * dx;
+    out[Y] += share * dy;
+    const spread = 0.5 * (1 - share) * (dx * dx + dy * dy);
+    out[PP] += share * (values[b + PP] - values[a + PP] + spread);
   }
 }
 

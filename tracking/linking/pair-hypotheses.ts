@@ -8,13 +8,20 @@ import { TracerFilter } from './tracer-filter';
 import { putBefore, type TrackLinks } from './track-links';
 
 /** Explanations kept from frame to frame. */
-const KEPT = 16;
+const KEPT = 10;
 /** Explanations so much (-2 ln likelihood) behind the best one never catch up. */
-const HOPELESS = 40;
+const HOPELESS = 32;
 /** Slots of the explanations of one frame; those of the next one lie in the other bank. */
 const BANK = 2 * KEPT;
 /** Tracks that are both seen in every frame and stay this many spot sizes apart are not mistaken. */
 const CLEAR_SIZES = 2.5;
+/**
+ * Where each of two tracks goes on as it did, and handing their spots over would be off by so much more
+ * (-2 ln likelihood), they are not mistaken however near they are.
+ */
+const CLEAR_COST = 30;
+/** Off by more than this, a track does not go on as it did: something happened that is worth a second look. */
+const ODD_COST = 20;
 /** Variance of where a tracer is in a spot that it shares with another one, spot sizes squared. */
 const MERGED_VARIANCE = 0.4;
 const NONE = -1;
@@ -32,6 +39,8 @@ const FRESH_B = 8;
 export class PairHypotheses {
   private readonly forward: PairFilter;
   private readonly backward: TracerFilter;
+  /** Largest variance that a random change of velocity gives the next place, px^2. */
+  private readonly bend: number;
   /** Slots now + 2 h and now + 2 h + 1 hold tracers A and B of explanation h. */
   private now = 0;
   private readonly alive = new Uint8Array(2 * BANK + 1);
@@ -53,6 +62,7 @@ export class PairHypotheses {
   ) {
     this.forward = new PairFilter(motion, brightness, table, 1, 2 * BANK + 1);
     this.backward = new TracerFilter(motion, brightness, table, -1, 2);
+    this.bend = Math.max(...motion.populations.map(({ jitter }) => jitter));
   }
 
   /**
@@ -81,7 +91,7 @@ export class PairHypotheses {
       const b = this.spotB[k];
       if (a >= 0 && a === b) return;
       spots += (a >= 0 ? 1 : 0) + (b >= 0 ? 1 : 0);
-      clear &&= a >= 0 && b >= 0 && this.areApart(a, b);
+      clear &&= a >= 0 && b >= 0 && (this.areApart(a, b) || this.goOn(a, b));
       news += isSet(changed, a) + isSet(changed, b);
     }
     if (clear || (again && news === 0)) return;
@@ -253,6 +263,28 @@ export class PairHypotheses {
     return dx * dx + dy * dy > apart * apart;
   }
 
+  /** True where spots `a` and `b` continue their own tracks in a straight line and surely not each other's. */
+  private goOn(a: number, b: number): boolean {
+    const { table, links } = this;
+    const { xPx, yPx, variance, frame } = table;
+    const a1 = links.before[a];
+    const b1 = links.before[b];
+    if (a1 < 0 || b1 < 0) return false;
+    const a2 = links.before[a1];
+    const b2 = links.before[b1];
+    if (a2 < 0 || b2 < 0 || frame[a] - frame[a2] !== 2 || frame[b] - frame[b2] !== 2) return false;
+    const ax = 2 * xPx[a1] - xPx[a2];
+    const ay = 2 * yPx[a1] - yPx[a2];
+    const bx = 2 * xPx[b1] - xPx[b2];
+    const by = 2 * yPx[b1] - yPx[b2];
+    const noiseA = variance[a] + 4 * variance[a1] + variance[a2] + this.bend;
+    const noiseB = variance[b] + 4 * variance[b1] + variance[b2] + this.bend;
+    const own = squared(xPx[a] - ax, yPx[a] - ay) / noiseA + squared(xPx[b] - bx, yPx[b] - by) / noiseB;
+    if (own > ODD_COST) return false;
+    const other = squared(xPx[b] - ax, yPx[b] - ay) / noiseA + squared(xPx[a] - bx, yPx[a] - by) / noiseB;
+    return other - own > CLEAR_COST;
+  }
+
   private mayTake(i: number, s: number): boolean {
     const { table, forward, limits } = this;
     const last = forward.spot[i];
@@ -328,6 +360,8 @@ export class PairHypotheses {
     if (followB >= 0) putBefore(links, followB, endB ? lastB : NONE);
   }
 }
+
+const squared = (dx: number, dy: number) => dx * dx + dy * dy;
 
 /** Marks of spots at which a tracer starts anew, those that cost nothing to take. */
 function fresh(toA: number, costA: number, toB: number, costB: number): number {

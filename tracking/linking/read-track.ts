@@ -2,7 +2,7 @@ import type { SpotTable } from './spot-table';
 import type { TracerFilter } from './tracer-filter';
 
 /** Spots of a track that are read to know its motion and brightness. */
-const SPOTS_READ = 16;
+const SPOTS_READ = 12;
 const reading = new Int32Array(SPOTS_READ);
 
 /**

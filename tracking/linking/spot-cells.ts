@@ -34,17 +34,18 @@ export class SpotCells {
   }
 
   /**
-   * Writes to `found` the spots (counted from the first one filled in) in the cells within `reachPx`
-   * of a place, some a little farther; returns how many.
+   * Writes to `found` the spots (counted from the first one filled in) in the cells that a rectangle
+   * touches, some a little outside it; returns how many.
    */
-  find(x: number, y: number, reachPx: number): number {
-    const left = this.column(x - reachPx);
-    const right = this.column(x + reachPx);
-    const bottom = this.row(y + reachPx);
+  find(leftPx: number, topPx: number, rightPx: number, bottomPx: number): number {
+    const { start, members, found, columns } = this;
+    const left = this.column(leftPx);
+    const right = this.column(rightPx);
+    const bottom = this.row(bottomPx);
     let count = 0;
-    for (let r = this.row(y - reachPx); r <= bottom; r++) {
-      const end = this.start[r * this.columns + right + 1];
-      for (let k = this.start[r * this.columns + left]; k < end; k++) this.found[count++] = this.members[k];
+    for (let r = this.row(topPx); r <= bottom; r++) {
+      const end = start[r * columns + right + 1];
+      for (let k = start[r * columns + left]; k < end; k++) found[count++] = members[k];
     }
     return count;
   }

@@ -2,7 +2,7 @@ import { concatSpots, sliceSpots } from '../spots';
 import type { Spots } from '../types';
 
 /** Enough spots to learn from how tracers move; more would only take time. */
-const SPOTS_ENOUGH = 50_000;
+const SPOTS_ENOUGH = 20_000;
 const WINDOWS = 4;
 /** A window is long enough to see how velocity and brightness change. */
 const FRAMES_LEAST = 16;

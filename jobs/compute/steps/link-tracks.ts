@@ -1,5 +1,5 @@
 import { linkSpots } from '@/tracking/link';
-import { concatSpots, decodeSpots } from '@/tracking/spots';
+import { takeEncodedRuns } from '@/tracking/spots';
 import type { Tracks } from '@/tracking/types';
 import type { LinkTracksInput } from '../tasks';
 import type { WorkContext } from './work-context';
@@ -9,8 +9,8 @@ export async function linkTracks(
   { chunks, image, recipe }: LinkTracksInput,
   context: WorkContext,
 ): Promise<Tracks> {
-  // Copies: a view into a larger buffer can't be decoded in place.
-  const spots = concatSpots(chunks.map((chunk) => decodeSpots(new Uint8Array(chunk))));
+  // The chunks are views of one message, whose memory can go when the last one is decoded.
+  const spots = takeEncodedRuns(chunks);
   context.onProgress(0.1);
   return linkSpots(spots, image, recipe);
 }

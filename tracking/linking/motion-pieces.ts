@@ -1,0 +1,101 @@
+import type { Spots } from '../types';
+
+/** Pieces of tracks from a first pass, to learn from how tracers move. */
+export interface MotionPieces {
+  count: number;
+  /** Middle of the piece, px, and mean velocity, px per frame. */
+  xPx: Float64Array;
+  yPx: Float64Array;
+  vx: Float64Array;
+  vy: Float64Array;
+  /** Mean square of a step per axis, without the noise of its ends, about the mean velocity, px^2. */
+  stepVariance: Float64Array;
+  /** Second differences of piece i are entries `start[i] .. start[i + 1] - 1`, both axes one after the other. */
+  start: Int32Array;
+  change: Float64Array;
+  /** Variance that position errors alone give each. */
+  noise: Float64Array;
+}
+
+/** Pieces with fewer changes say too little of one tracer. */
+const CHANGES_LEAST = 4;
+/** A longer piece is cut: all tracers should have a say. */
+const CHANGES_MOST = 24;
+/** Enough to tell populations apart; more would only take time. */
+const CHANGES_ENOUGH = 8_000;
+
+/**
+ * Pieces without gaps of the tracks that a first pass made, spread over the spots given.
+ *
+ * @param before for each spot the one before it in its track, or -1.
+ */
+export function motionPieces(spots: Spots, before: Int32Array): MotionPieces {
+  const { count, frame } = spots;
+  const after = new Int32Array(count).fill(-1);
+  let links = 0;
+  for (let s = 0; s < count; s++) {
+    if (before[s] < 0 || frame[s] !== frame[before[s]] + 1) continue;
+    after[before[s]] = s;
+    links++;
+  }
+  // Each link carries about two changes, one per axis.
+  const skip = Math.max(1, Math.ceil((2 * links) / CHANGES_ENOUGH));
+  const collected = { x: [], y: [], vx: [], vy: [], steps: [] } as Record<string, number[]>;
+  const start = [0];
+  const change: number[] = [];
+  const noise: number[] = [];
+  let turn = 0;
+  for (let s = 0; s < count; s++) {
+    const b = before[s];
+    if (b >= 0 && after[b] === s) continue;
+    let first = s;
+    while (after[first] >= 0) {
+      let last = first;
+      let length = 1;
+      for (; after[last] >= 0 && 2 * (length - 1) < CHANGES_MOST; last = after[last]) length++;
+      if (2 * (length - 2) >= CHANGES_LEAST && turn++ % skip === 0) {
+        take(first, last, length);
+        start.push(change.length);
+      }
+      first = last;
+    }
+  }
+  const list = (values: number[]) => Float64Array.from(values);
+  return {
+    count: start.length - 1,
+    xPx: list(collected.x),
+    yPx: list(collected.y),
+    vx: list(collected.vx),
+    vy: list(collected.vy),
+    stepVariance: list(collected.steps),
+    start: Int32Array.from(start),
+    change: list(change),
+    noise: list(noise),
+  };
+
+  function take(first: number, last: number, length: number): void {
+    const { xPx, yPx, sxPx, syPx } = spots;
+    const vx = (xPx[last] - xPx[first]) / (length - 1);
+    const vy = (yPx[last] - yPx[first]) / (length - 1);
+    let steps = 0;
+    for (let a = first; a !== last;) {
+      const b = after[a];
+      const dx = xPx[b] - xPx[a] - vx;
+      const dy = yPx[b] - yPx[a] - vy;
+      const ends = sxPx[a] ** 2 + syPx[a] ** 2 + sxPx[b] ** 2 + syPx[b] ** 2;
+      steps += 0.5 * (dx * dx + dy * dy - ends);
+      const c = b === last ? -1 : after[b];
+      if (c >= 0) {
+        change.push(xPx[c] - 2 * xPx[b] + xPx[a], yPx[c] - 2 * yPx[b] + yPx[a]);
+        noise.push(sxPx[a] ** 2 + 4 * sxPx[b] ** 2 + sxPx[c] ** 2);
+        noise.push(syPx[a] ** 2 + 4 * syPx[b] ** 2 + syPx[c] ** 2);
+      }
+      a = b;
+    }
+    collected.x.push(0.5 * (xPx[first] + xPx[last]));
+    collected.y.push(0.5 * (yPx[first] + yPx[last]));
+    collected.vx.push(vx);
+    collected.vy.push(vy);
+    collected.steps.push(Math.max(0, steps / (length - 1)));
+  }
+}
