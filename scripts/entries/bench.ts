@@ -10,6 +10,7 @@ import { makeDemoStack } from '@/jobs/demo/make-demo-stack';
 import { localStack } from '@/jobs/local/local-stack';
 import { codeVersion } from '@/lib/env';
 import { comparePipelines } from '@/scripts/bench/compare';
+import { flowGoals, runFlow } from '@/scripts/bench/flow-run';
 import { memoryGoal, speedGoals, workersGoal } from '@/scripts/bench/goals';
 import { memoryTable, renderFrames, runMemory, type MemoryRun } from '@/scripts/bench/memory-run';
 import { makeRecording, type BenchRecording } from '@/scripts/bench/recording';
@@ -31,7 +32,12 @@ const FREE_BYTES_LEAST = 8 * 2 ** 30;
 const CONDITIONS = { pixelSize_m: 1e-5, frameInterval_s: 5e-3, sheetThickness_m: 1e-4 };
 
 const { values: options } = parseArgs({
-  options: { quick: { type: 'boolean', default: false }, memory: { type: 'boolean', default: false } },
+  options: {
+    quick: { type: 'boolean', default: false },
+    memory: { type: 'boolean', default: false },
+    /** The kernels of the flow alone. */
+    flow: { type: 'boolean', default: false },
+  },
 });
 const folder = await mkdtemp(join(tmpdir(), 'beadline-bench-'));
 const childPath = fileURLToPath(new URL('./compute-child.mjs', import.meta.url));
@@ -116,12 +122,16 @@ try {
   say(
     `Beadline ${codeVersion()}, Node ${process.version}, ${cpus().length} x ${cpus()[0]?.model}, load ${load}, kernels ${chooseKernels().name}`,
   );
-  const sparse = await compareOn('sparse');
-  await compareOn('dense');
-  await compareWorkers(await demoStack());
-  const { tiffPath: path, megapixels } = sparse;
-  await compareWorkers({ name: 'sparse set', path, megapixels, conditions: CONDITIONS });
-  await measureMemory();
+  if (!options.flow) {
+    const sparse = await compareOn('sparse');
+    await compareOn('dense');
+    await compareWorkers(await demoStack());
+    const { tiffPath: path, megapixels } = sparse;
+    await compareWorkers({ name: 'sparse set', path, megapixels, conditions: CONDITIONS });
+    await measureMemory();
+  }
+  note('Velocities and candidates');
+  summary.push(...flowGoals(await runFlow(options.quick)));
   say(`\n${summary.join('\n')}`);
 } finally {
   await rm(folder, { recursive: true, force: true });

@@ -1,7 +1,12 @@
 import { kernelsOfThisProcess } from '@/jobs/compute/kernels';
 import { keepsFalseRate, studyFalseSpots } from '@/tracking/studies/false-spots';
 import { studyLinkingDifficulty } from '@/tracking/studies/linking-difficulty';
-import { lineDensityTrials, summariseLineDensity } from '@/tracking/studies/line-density';
+import {
+  BROKEN_ASSUMPTIONS,
+  concernedBy,
+  lineDensityTrials,
+  summariseLineDensity,
+} from '@/tracking/studies/line-density';
 import {
   goalsReached,
   keepsMixedPromises,
@@ -12,6 +17,13 @@ import {
 } from '@/tracking/studies/mixed-recording';
 import { MIXED_SIZES, type MixedSet } from '@/tracking/simulate/mixed-scene';
 import { productionFormTrials, type TransientKind } from '@/tracking/studies/production-forms';
+import {
+  inventedPopulations,
+  keepsPopulations,
+  namedTrapped,
+  studyPopulations,
+} from '@/tracking/studies/populations';
+import { PRECISION_LEAST, RECALL_LEAST, studyReconnections } from '@/tracking/studies/reconnections';
 import { keepsPromises, studyStandardRecording } from '@/tracking/studies/standard-recording';
 import { steadyTangleCoverage } from '@/tracking/studies/steady-tangle';
 
@@ -31,10 +43,14 @@ const TRANSIENT_SEEDS = Array.from({ length: 100 }, (_, i) => i + 1);
 const RIGHT_LEAST = 90;
 const UNDECIDED_LEAST = 80;
 const WRONG_MOST = 5;
+const RECORDING_SEEDS = [1, 2, 3, 4, 5];
+const POPULATION_SEEDS = Array.from({ length: 20 }, (_, i) => i + 1);
 const CAMPAIGN_SEEDS = Array.from({ length: 200 }, (_, i) => i + 1);
 /** Scatter of positions from easy to hopeless at 0.002 tracers per px^2, px. */
 const SCATTERS_PX = [0.1, 0.5, 1, 1.5, 2, 3];
 /** Line densities from a slow counterflow to a dense tangle, m^-2. */
+/** Where an assumption is broken a method must decline or say so in this share of trials. */
+const WARNED_LEAST = 0.8;
 const LINE_DENSITIES = [1e7, 3e7, 1e8];
 
 const STUDIES: Record<string, Study> = {
@@ -88,6 +104,14 @@ const STUDIES: Record<string, Study> = {
         yield { ...summary };
       }
     }
+    for (const broken of BROKEN_ASSUMPTIONS) {
+      const density = 1e7;
+      const trials = lineDensityTrials(density, TANGLE_SEEDS, 0.15, broken);
+      for (const summary of summariseLineDensity(density, trials, broken)) {
+        const concerned = concernedBy(broken).includes(summary.method);
+        yield { broken, ...summary, ...(concerned ? { kept: summary.warned >= WARNED_LEAST } : {}) };
+      }
+    }
   },
   /** Which production form is named for transients of each, clean ones and poor ones. */
   *'production-forms'() {
@@ -97,6 +121,39 @@ const STUDIES: Record<string, Study> = {
         yield { ...row, kept: told && row.wrong <= WRONG_MOST };
       }
     }
+  },
+  /** Pairs that reconnect among decoys: how many of those accepted are right, how many are found. */
+  *reconnections() {
+    for (const sigmaPx of [0.15, 0.3]) {
+      for (const sideFrames of [
+        [9, 24],
+        [6, 7],
+      ] satisfies [number, number][]) {
+        const figures = studyReconnections({ sigmaPx, sideFrames }, RECORDING_SEEDS);
+        // The promise is stated for 1.5 um and eight points a side.
+        const promised = sigmaPx === 0.15 && sideFrames[0] >= 8;
+        const kept = figures.precision >= PRECISION_LEAST && figures.recall >= RECALL_LEAST;
+        yield promised ? { ...figures, kept } : { ...figures };
+      }
+    }
+  },
+  /** Populations beside the rule that knows the densities; free tracers alone; a decay of trapped ones alone. */
+  *populations() {
+    for (const separation of [4, 3]) {
+      const one = { tracks: 400, trappedShare: 0.35, separation, parabola: 1.5 };
+      const figures = studyPopulations(one, POPULATION_SEEDS);
+      yield { ...figures, kept: keepsPopulations(figures) };
+    }
+    const invented = [0, 3].map((parabola) => inventedPopulations(POPULATION_SEEDS, parabola));
+    const kept = invented[0] + invented[1] <= 1;
+    yield {
+      freeOnly: 2 * POPULATION_SEEDS.length,
+      inventedPlain: invented[0],
+      inventedParabolic: invented[1],
+      kept,
+    };
+    const named = namedTrapped(POPULATION_SEEDS);
+    yield { decays: POPULATION_SEEDS.length, named, kept: named >= 0.9 * POPULATION_SEEDS.length };
   },
   /** How often the intervals of gamma and v_0 hold the truth. */
   *'steady-tangle'() {

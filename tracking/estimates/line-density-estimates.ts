@@ -2,6 +2,7 @@ import type { StateChange } from '../populations/changes-of-state';
 import type { Pieces } from '../populations/pieces';
 import type { Conditions, Recipe, Tracks } from '../types';
 import { beadsPerLength } from './beads-per-length';
+import { darkLines, lineDirections } from './cautions';
 import { combine } from './combine';
 import { crossingsEstimate } from './crossings';
 import { withoutTracers, type EstimateContext } from './context';
@@ -26,6 +27,9 @@ const BY_TRACERS: readonly [EstimateMethod, (context: EstimateContext) => Densit
   ['line-velocity', lineVelocityEstimate],
   ['decay', decayEstimate],
 ];
+
+/** Methods whose formulas take isotropic lines for granted, and count those that carry a tracer. */
+const BY_ISOTROPY: readonly EstimateMethod[] = ['crossings', 'neighbour-distance', 'beads-per-length'];
 
 export interface LineDensityEstimates {
   /** Line density and line spacing by every method and combined. */
@@ -56,9 +60,12 @@ export function lineDensityEstimates(
   const groups = lineGroups(tracks, pool, image);
   const refusal = withoutTracers(pool, populationNote);
   const context = refusal ? null : shared();
-  const results: DensityResult[] = BY_TRACERS.map(([method, estimate]) =>
-    context ? estimate(context) : notUsable(method, refusal ?? ''),
-  );
+  const cautions = context ? lineDirections(context) + darkLines(context) : '';
+  const results: DensityResult[] = BY_TRACERS.map(([method, estimate]) => {
+    const result = context ? estimate(context) : notUsable(method, refusal ?? '');
+    const concerned = result.valueM2 !== null && BY_ISOTROPY.includes(method);
+    return concerned ? { ...result, note: result.note + cautions } : result;
+  });
   const flights = captures && freeFlights(captures.pieces, captures.changes, conditions, pool.driftPx);
   results.push(freePathEstimate(flights, conditions));
   results.push(notUsable('marked-chains', 'No chain of tracers was marked by a person.'));

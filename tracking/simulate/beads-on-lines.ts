@@ -21,7 +21,12 @@ export function addBeadsOnLines(builder: SceneBuilder, o: FilledTangleOptions, s
   const { frames, frameIntervalS: dt, pixelSizeM: px } = o;
   const drift = [o.flowDirection[0] * o.tangleVelocityMPerS, o.flowDirection[1] * o.tangleVelocityMPerS];
   const half = o.sheetThicknessM / 2;
-  const lines = isotropicLines(createRandom(seed), lineBox(o), o.lineDensityM2);
+  const lines = isotropicLines(
+    createRandom(seed),
+    lineBox(o),
+    o.lineDensityM2,
+    o.acrossFlow ? o.flowDirection : null,
+  );
   const xPx = new Float64Array(frames);
   const yPx = new Float64Array(frames);
   const visible = new Uint8Array(frames);

@@ -21,8 +21,14 @@ export interface LinePiece {
  * uniform place of the disc that it crosses at right angles.
  *
  * @param densityM2 line length per volume, m^-2.
+ * @param across unit vector of the image that all lines lie across, in planes; null for isotropic lines.
  */
-export function isotropicLines(random: Random, box: Box, densityM2: number): LinePiece[] {
+export function isotropicLines(
+  random: Random,
+  box: Box,
+  densityM2: number,
+  across: readonly [number, number] | null = null,
+): LinePiece[] {
   const centre = box.low.map((low, a) => (low + box.high[a]) / 2);
   const radius = 0.5 * Math.hypot(...box.low.map((low, a) => box.high[a] - low));
   const count = random.poisson(densityM2 * Math.PI * radius * radius);
@@ -31,7 +37,9 @@ export function isotropicLines(random: Random, box: Box, densityM2: number): Lin
     const cos = 2 * random.uniform() - 1;
     const sin = Math.sqrt(1 - cos * cos);
     const turn = 2 * Math.PI * random.uniform();
-    const direction: [number, number, number] = [sin * Math.cos(turn), sin * Math.sin(turn), cos];
+    const direction: [number, number, number] = across
+      ? [-across[1] * Math.cos(turn), across[0] * Math.cos(turn), Math.sin(turn)]
+      : [sin * Math.cos(turn), sin * Math.sin(turn), cos];
     const r = radius * Math.sqrt(random.uniform());
     const angle = 2 * Math.PI * random.uniform();
     const [e1, e2] = normalsOf(direction);

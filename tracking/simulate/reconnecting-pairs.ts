@@ -6,8 +6,6 @@ import type { SceneBuilder } from './scene-builder';
 import { smoothPath } from './smooth-path';
 import type { FilledTangleOptions } from './tangle-options';
 
-/** A pair is followed for this many frames on either side of its meeting, at least and at most. */
-const SIDE_FRAMES = { low: 12, high: 40 } as const;
 /** Tracers ride beside the nearest points of their lines: separation left at the meeting, m. */
 const OFFSET_MAX_M = 4e-6;
 
@@ -23,11 +21,12 @@ export function addReconnectingPairs(
 ): SceneEvent[] {
   const { frames, frameIntervalS: dt, pixelSizeM: px } = o;
   const events: SceneEvent[] = [];
+  const [low, high] = o.eventSideFrames;
   for (let i = 0; i < o.events; i++) {
     const random = createRandom(mixSeed(seed, i + 1));
-    const sides = [0, 1].map(() => SIDE_FRAMES.low + random.integer(SIDE_FRAMES.high - SIDE_FRAMES.low + 1));
-    const room = Math.max(1, frames - 2 * SIDE_FRAMES.low);
-    const t0Frames = Math.min(frames, SIDE_FRAMES.low + room * random.uniform());
+    const sides = [0, 1].map(() => low + random.integer(high - low + 1));
+    const room = Math.max(1, frames - 2 * low);
+    const t0Frames = Math.min(frames, low + room * random.uniform());
     const amplitudeBefore = 0.6 + 0.6 * random.uniform();
     const amplitudeAfter = 1 + 1.2 * random.uniform();
     const before = 2 * Math.PI * random.uniform();

@@ -37,6 +37,8 @@ export interface TangleOptions {
   freeWobbleTimeS?: number;
   /** Sudden jumps of a line as after a reconnection, per line and second. */
   burstsPerLineS?: number;
+  /** True for lines that all lie in planes across the flow. */
+  acrossFlow?: boolean;
   /** Slope of the gentle bends of a line (0 is straight) and their length, m. */
   bendSlope?: number;
   bendLengthM?: number;
@@ -49,6 +51,10 @@ export interface TangleOptions {
   captureRadiusM?: number;
   /** Pairs of trapped tracers that meet and part; extra to the line process. */
   events?: number;
+  /** Pairs that come near each other without reconnecting. */
+  decoys?: number;
+  /** Frames that both kinds of pairs are followed for on either side, at least and at most. */
+  eventSideFrames?: [low: number, high: number];
 }
 
 export type FilledTangleOptions = Required<TangleOptions>;
@@ -76,6 +82,7 @@ export function fillTangleOptions(options: TangleOptions): FilledTangleOptions {
     freeWobbleMPerS: 0.2e-3,
     freeWobbleTimeS: 0.3,
     burstsPerLineS: 0,
+    acrossFlow: false,
     bendSlope: 0.1,
     bendLengthM: 1e-3,
     brightnessE: 400,
@@ -83,6 +90,8 @@ export function fillTangleOptions(options: TangleOptions): FilledTangleOptions {
     blinkPerFrame: 0.01,
     captureRadiusM: 0,
     events: 0,
+    decoys: 0,
+    eventSideFrames: [12, 40],
     ...options,
   };
 }

@@ -1,5 +1,6 @@
 import { mixSeed } from '../random';
 import { addBeadsOnLines } from './beads-on-lines';
+import { addDecoyPairs } from './decoy-pairs';
 import { addFreeTracers } from './free-tracers';
 import { addReconnectingPairs } from './reconnecting-pairs';
 import type { Scene } from './scene';
@@ -17,5 +18,6 @@ export function tangleScene(options: TangleOptions): Scene {
   const lines = addBeadsOnLines(builder, filled, mixSeed(filled.seed, 1));
   const captures = addFreeTracers(builder, filled, lines, mixSeed(filled.seed, 2));
   const events = addReconnectingPairs(builder, filled, mixSeed(filled.seed, 3));
+  addDecoyPairs(builder, filled, mixSeed(filled.seed, 4));
   return builder.build(filled.lineDensityM2 > 0 ? filled.lineDensityM2 : Number.NaN, events, captures);
 }
