@@ -19,7 +19,7 @@ import type { FilledTangleOptions } from './tangle-options';
 export function addBeadsOnLines(builder: SceneBuilder, o: FilledTangleOptions, seed: number): MovingLine[] {
   if (o.lineDensityM2 === 0) return [];
   const { frames, frameIntervalS: dt, pixelSizeM: px } = o;
-  const drift = [o.flowDirection[0] * o.tangleVelocityMPerS, o.flowDirection[1] * o.tangleVelocityMPerS];
+  const drift = [o.flowDirection[0] * o.tangleVelocityMPerS, o.flowDirection[1] * o.tangleVelocityMPerS, 0];
   const half = o.sheetThicknessM / 2;
   const lines = isotropicLines(
     createRandom(seed),
