@@ -29,6 +29,10 @@ export interface TrackBlock {
   bridged: Uint8Array;
   /** Bits of tracking/types, one byte per point. */
   flags: Uint8Array;
+  /** Numbers of the tracks that a person changed. */
+  changed: ReadonlySet<number>;
+  /** Populations that a person gave to stretches, by number of the track: first and last frame, code. */
+  given: ReadonlyMap<number, readonly (readonly [number, number, number])[]>;
   /** First and last frame of each whole track, as far as it is known. */
   firstFrame: Uint32Array;
   lastFrame: Uint32Array;
@@ -52,9 +56,21 @@ export function toTrackBlock(window: TrackWindowView): TrackBlock {
     y: Float32Array.from(window.y),
     bridged: Uint8Array.from(window.flags, (flags) => (flags & POINT_BRIDGED ? 1 : 0)),
     flags: Uint8Array.from(window.flags),
+    changed: new Set(window.changed),
+    given: givenOf(window),
     firstFrame: window.firstFrame ? Uint32Array.from(window.firstFrame) : ends((i) => window.start[i]),
     lastFrame: window.lastFrame ? Uint32Array.from(window.lastFrame) : ends((i) => window.start[i + 1] - 1),
   };
+}
+
+function givenOf({ given = [] }: TrackWindowView): Map<number, [number, number, number][]> {
+  const byTrack = new Map<number, [number, number, number][]>();
+  for (const { track, from, to, population } of given) {
+    const stretches = byTrack.get(track) ?? [];
+    stretches.push([from, to, population]);
+    byTrack.set(track, stretches);
+  }
+  return byTrack;
 }
 
 /** Points of a track that are drawn at a frame: `first .. last` in the block's arrays. */

@@ -18,7 +18,8 @@ export interface HeadProps {
 
 /** The head of every page of a laboratory, 52 px: wordmark, places, work in hand, the person. */
 export function Head({ places, viewer, switchLab, work }: HeadProps) {
-  const current = currentPlace(places, usePathname());
+  const pathname = usePathname();
+  const current = currentPlace(places, pathname);
   const online = useOnline();
   return (
     <header>
@@ -60,10 +61,16 @@ export function Head({ places, viewer, switchLab, work }: HeadProps) {
       <div role="status" className="print:hidden">
         {online ? null : (
           <p className="border-t-[1.5px] border-dashed border-ink px-sheet-x-narrow py-1 text-note hand:px-sheet-x">
-            No link to the server. What you see stays; what you change now can&rsquo;t be stored.
+            No link to the server. What you see stays; {whatIsKept(pathname)}.
           </p>
         )}
       </div>
     </header>
   );
 }
+
+/** Corrections and verdicts wait in the browser; what is changed elsewhere is not. */
+const whatIsKept = (pathname: string): string =>
+  /\/(edit|review)(\/|$)/.test(pathname)
+    ? 'what you do here is kept and sent later'
+    : 'what you change now can’t be stored';

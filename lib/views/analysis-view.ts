@@ -78,6 +78,10 @@ export const trackWindowSchema = z.object({
   x: z.array(z.number()),
   y: z.array(z.number()),
   flags: z.array(count),
+  /** Numbers of the tracks that corrections made other than linking did. */
+  changed: z.array(count).optional(),
+  /** Populations that a person gave to stretches of tracks, frames included. */
+  given: z.array(z.object({ track: count, from: count, to: count, population: count })).optional(),
 });
 export type TrackWindowView = z.infer<typeof trackWindowSchema>;
 

@@ -23,9 +23,9 @@ describe('a preview', () => {
   });
 
   it('on a logarithmic scale keeps black and white and lifts what is faint', () => {
-    const counts = Float32Array.of(-5, 10, 11, 20, 60, 110, 300);
-    // 255 ln(1 + 100 t) / ln 101 for t = 0.01, 0.1, 0.5: by hand.
-    expect([...stretchToBytesLog(counts, 10, 110)]).toEqual([0, 0, 38, 132, 217, 255, 255]);
+    const counts = Float32Array.of(-5, 10, 11, 20, 70, 110, 300);
+    // 255 ln(1 + 10 t) / ln 11 for t = 0.01, 0.1, 0.6: by hand.
+    expect([...stretchToBytesLog(counts, 10, 110)]).toEqual([0, 0, 10, 74, 207, 255, 255]);
     expect([...stretchToBytesLog(counts, 15, 15)]).toEqual([0, 0, 0, 255, 255, 255, 255]);
   });
 
