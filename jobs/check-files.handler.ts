@@ -13,6 +13,7 @@ import { checkFilesJob, type CheckFilesPayload } from './check-files';
 import { sourceOf } from './ingest-source';
 import type { JobHandler } from './job-context';
 import { askForMail } from './send-mail';
+import { withLocalStack } from './stack-store';
 
 const SHOWN = 12;
 const short = (hash: string) => `${hash.slice(0, SHOWN)}..`;
@@ -69,7 +70,9 @@ async function lookAt(
   if (!recording?.sha256) return null;
   const { source } = await sourceOf(recording);
   try {
-    const got = await sha256OfStack(source, { signal, onBytes });
+    const got = await withLocalStack(recordingId, () => sha256OfStack(source, { signal, onBytes }), {
+      signal,
+    });
     if (got === recording.sha256) return { recordingId, state: 'intact', detail: null };
     const detail = `SHA-256 is ${short(got)}, at arrival it was ${short(recording.sha256)}.`;
     return { recordingId, state: 'damaged', detail };

@@ -6,7 +6,7 @@ import { detectSpotsJob, type DetectSpotsPayload } from './detect-spots';
 import type { JobHandler } from './job-context';
 import { linkTracksJob } from './link-tracks';
 import { enqueueJob } from './queue';
-import { stackFolder } from './stack-folder';
+import { stackPlace } from './stack-store';
 import { giveUpAnalysis } from './tell-of-analysis';
 
 export const detectSpotsHandler: JobHandler<DetectSpotsPayload> = {
@@ -20,7 +20,7 @@ export const detectSpotsHandler: JobHandler<DetectSpotsPayload> = {
     const found = await compute(
       'detectChunk',
       {
-        stackDir: stackFolder(work.recordingId),
+        stackDir: await stackPlace(work.recordingId),
         model: image.model,
         modelKey: analysisId,
         recipe: image.recipe,

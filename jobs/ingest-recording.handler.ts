@@ -1,4 +1,3 @@
-import { rm } from 'node:fs/promises';
 import type { Transaction } from 'sequelize';
 import type { ImageQuality } from '@/lib/recording-facts';
 import { models } from '@/models';
@@ -10,29 +9,34 @@ import { sourceOf } from './ingest-source';
 import type { JobHandler } from './job-context';
 import { CHECK_TIMEOUT_MS } from './job-timeouts';
 import { stackFolder } from './stack-folder';
+import { removeStack, withLocalStack } from './stack-store';
 import { startAnalysis } from './start-analysis';
 
 export const ingestRecordingHandler: JobHandler<IngestPayload> = {
   definition: ingestRecordingJob,
-  async run({ claim, payload, compute, report, commit }) {
+  async run({ claim, payload, signal, compute, report, commit }) {
     const { labId, subjectId: recordingId } = claim;
     const recording = await models().Recording.findOne({ where: { id: recordingId, labId } });
     if (!recording || recording.state !== 'checking') return commit(async () => undefined);
     const { source, expectedSha256 } = await sourceOf(recording);
     const outDir = stackFolder(recordingId);
-    const stack = await compute(
-      'inspectStack',
-      {
-        source,
-        outDir,
-        expectedSha256,
-        usePages: recording.usePages ?? undefined,
-        channel: channelOf(recording.channel),
-        scale: await scaleOf(recording),
-        previews: true,
-      },
-      { onProgress: report, timeoutMs: CHECK_TIMEOUT_MS },
-    );
+    const scale = await scaleOf(recording);
+    const check = () =>
+      compute(
+        'inspectStack',
+        {
+          source,
+          outDir,
+          expectedSha256,
+          usePages: recording.usePages ?? undefined,
+          channel: channelOf(recording.channel),
+          scale,
+          previews: true,
+        },
+        { onProgress: report, timeoutMs: CHECK_TIMEOUT_MS },
+      );
+    const keep = ({ state }: StackReport) => state === 'ready';
+    const stack = await withLocalStack(recordingId, check, { keep, signal });
     await commit(async (transaction) => {
       if (stack.state === 'refused') await saveRefusal(recording, stack, transaction);
       else {
@@ -42,7 +46,7 @@ export const ingestRecordingHandler: JobHandler<IngestPayload> = {
       }
     });
     // Only once the refusal stands: a crash in between leaves bytes, never a ready recording without them.
-    if (stack.state === 'refused' && !stack.refusal.offer) await rm(outDir, { recursive: true, force: true });
+    if (stack.state === 'refused' && !stack.refusal.offer) await removeStack(recordingId);
   },
   async onGivenUp({ subjectId, labId }, { detail }, transaction) {
     await models().Recording.update(

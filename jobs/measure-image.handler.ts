@@ -6,7 +6,7 @@ import { detectSpotsJob } from './detect-spots';
 import type { JobHandler } from './job-context';
 import { measureImageJob } from './measure-image';
 import { enqueueJobs } from './queue';
-import { stackFolder } from './stack-folder';
+import { stackPlace } from './stack-store';
 import { giveUpAnalysis } from './tell-of-analysis';
 
 export const measureImageHandler: JobHandler<Record<string, never>> = {
@@ -20,7 +20,7 @@ export const measureImageHandler: JobHandler<Record<string, never>> = {
     const measured = await compute(
       'measureImage',
       {
-        stackDir: stackFolder(work.recordingId),
+        stackDir: await stackPlace(work.recordingId),
         request: order.recipeRequest,
         pixelSizeM: order.conditions.pixelSize_m,
       },

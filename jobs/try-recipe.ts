@@ -4,7 +4,7 @@ import type { TryOutView } from '@/lib/views/analysis-view';
 import type { Conditions, RecipeRequest, Spots, Tracks } from '@/tracking/types';
 import { ComputeError } from './compute/compute-error';
 import { ComputePool } from './compute/pool';
-import { stackFolder } from './stack-folder';
+import { stackPlace } from './stack-store';
 
 /** A person waits for the answer; whatever takes longer than this is not a try-out. */
 const TIMEOUT_MS = 60_000;
@@ -33,7 +33,7 @@ export async function tryRecipe(
   const pool = (shared.beadlineTryPool ??= new ComputePool(limit('tryOutsAtOnce'), {
     waitingMost: WAITING_MOST,
   }));
-  const input = { stackDir: stackFolder(recordingId), frames, request: recipe, conditions };
+  const input = { stackDir: await stackPlace(recordingId), frames, request: recipe, conditions };
   const tried = await pool
     .run('tryRecipe', input, { signal, timeoutMs: TIMEOUT_MS, key: recordingId })
     .catch((cause: unknown) => {

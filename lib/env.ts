@@ -37,6 +37,9 @@ export const dataDir = (): string =>
 /** Address of the PostgreSQL database. @throws SettingError when it is not set */
 export const databaseUrl = (): string => needed('DATABASE_URL');
 
+/** Object store for stacks and exports, see `readS3Setting`; null keeps them in the data folder. */
+export const storeUrl = (): string | null => process.env.BEADLINE_S3_URL?.trim() || null;
+
 /** Key that signs sessions. @throws SettingError when it is not set */
 export const sessionSecret = (): string => needed('NEXTAUTH_SECRET');
 

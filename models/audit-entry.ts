@@ -28,9 +28,10 @@ export class AuditEntry extends Model<InferAttributes<AuditEntry>, InferCreation
         subjectKind: DataTypes.TEXT,
         subjectId: DataTypes.TEXT,
         detail: DataTypes.JSONB,
-        createdAt: DataTypes.DATE,
+        // The database's clock is the one that all processes share, and no jump of another one changes the order.
+        createdAt: { type: DataTypes.DATE, defaultValue: sequelize.literal('now()') },
       },
-      { sequelize, tableName: 'audit_entries', updatedAt: false },
+      { sequelize, tableName: 'audit_entries', timestamps: false },
     );
   }
 }

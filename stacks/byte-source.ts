@@ -22,7 +22,7 @@ export interface ReadRoom {
 }
 
 /** So many bytes of `room`, or of their own without one. */
-function roomFor(length: number, room: ReadRoom | undefined): Buffer {
+export function roomFor(length: number, room: ReadRoom | undefined): Buffer {
   if (room && room.bytes.length >= length) return room.bytes.subarray(0, length);
   // Not from Node's shared pool, so that 16-bit and 32-bit views are aligned.
   const bytes = Buffer.allocUnsafeSlow(length);

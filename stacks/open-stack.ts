@@ -1,11 +1,9 @@
-import { join } from 'node:path';
 import { type Frame } from '@/tracking/types';
-import { fileSource } from './byte-source';
 import { frameReader } from './frame-reader';
 import { type SampleKind } from './frame-layout';
 import { openIndex } from './index-reader';
-import { openSource } from './open-source';
-import { INDEX_FILE } from './stack-index';
+import { openIndexSource, openSource } from './open-source';
+import { type StackPlace } from './stack-place';
 
 export interface StackReader {
   readonly width: number;
@@ -28,14 +26,14 @@ export interface StackReader {
 }
 
 /**
- * Opens the stack that `inspectStack` indexed in `dir`: any frame is found in two short reads,
+ * Opens the stack that `inspectStack` indexed, where it lies now: any frame is found in two short reads,
  * whatever the number of frames.
  * @throws the file system's error when there is no index, RangeError when it isn't one of this version.
  */
-export async function openStack(dir: string): Promise<StackReader> {
-  const indexSource = await fileSource(join(dir, INDEX_FILE));
+export async function openStack(place: StackPlace): Promise<StackReader> {
+  const indexSource = await openIndexSource(place);
   const index = await openIndex(indexSource);
-  const sources = index.sources.map((source) => openSource(dir, source));
+  const sources = index.sources.map((source) => openSource(place, source));
   const reader = frameReader(sources, index);
   const { width, height, frames, bitDepth, sampleKind, maxCount } = index;
   return {

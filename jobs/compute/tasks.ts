@@ -2,6 +2,7 @@ import type { ImageFacts } from '@/lib/analysis-facts';
 import type { Film } from '@/lib/review/film';
 import type { FilmPathView } from '@/lib/views/review-view';
 import type { StackReport, StackSource } from '@/stacks/stack-report';
+import type { StackPlace } from '@/stacks/stack-place';
 import type { FlowMeasures, ImageSize } from '@/tracking/flow-measures';
 import type { RehearsalFound } from '@/tracking/rehearsal/assess-rehearsal';
 import type { RehearsalAssessment } from '@/tracking/rehearsal/assessment';
@@ -25,7 +26,7 @@ export interface InspectInput {
 }
 
 export interface MeasureImageInput {
-  stackDir: string;
+  stackDir: StackPlace;
   request: RecipeRequest;
   pixelSizeM: number;
 }
@@ -37,7 +38,7 @@ export interface MeasureImageOutput {
 }
 
 export interface DetectChunkInput {
-  stackDir: string;
+  stackDir: StackPlace;
   model: Uint8Array;
   /** Tells models apart: the same key always comes with the same model and recipe. */
   modelKey: string;
@@ -70,7 +71,7 @@ export interface MeasureFlowInput {
 }
 
 export interface TryRecipeInput {
-  stackDir: string;
+  stackDir: StackPlace;
   /** At most 8, any order. */
   frames: number[];
   request: RecipeRequest;
@@ -85,7 +86,7 @@ export interface TryRecipeOutput {
 }
 
 export interface ComposeStripsInput {
-  stackDir: string;
+  stackDir: StackPlace;
   contrast: { low: number; high: number };
   pixelSizeM: number;
   frameIntervalS: number;

@@ -1,11 +1,13 @@
-import { mkdir, rename, stat } from 'node:fs/promises';
+import { mkdir, rename, rm, stat } from 'node:fs/promises';
 import { join } from 'node:path';
 import { dataDir } from '@/lib/env';
 import { newId } from '@/lib/ids';
 import { models } from '@/models';
 import { getSequelize } from '@/models/database';
 import { enqueueIngest } from '../ingest-recording';
+import { objectStore } from '../object-store';
 import { stackFile, stackFolder } from '../stack-folder';
+import { storeFile } from '../stack-store';
 import { writeDemoFile, type DemoFile } from './demo-accounts';
 import {
   conditionsForScene,
@@ -59,8 +61,13 @@ async function makeRecording(
   const made = join(workFolder, name);
   await makeDemoStack(made, scene, conditionsForScene(demoRun.conditions));
   const { size } = await stat(made);
-  await mkdir(stackFolder(id), { recursive: true });
-  await rename(made, stackFile(id));
+  if (objectStore()) {
+    await storeFile(id, made, stackFile(id));
+    await rm(made);
+  } else {
+    await mkdir(stackFolder(id), { recursive: true });
+    await rename(made, stackFile(id));
+  }
   await getSequelize().transaction(async (transaction) => {
     const userId = run.createdBy;
     const fields = { runId: run.id, name, kind: 'file' as const, bytes: String(size), createdBy: userId };

@@ -36,7 +36,7 @@ export const CONDITIONS: Conditions = {
   tracer: { species: 'solid deuterium', diameter_m: 4e-6, density_kg_m3: 202 },
 };
 
-const SCENE: DemoScene = {
+export const SCENE: DemoScene = {
   widthPx: 160,
   heightPx: 160,
   frames: 48,

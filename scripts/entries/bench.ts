@@ -13,6 +13,8 @@ import { comparePipelines } from '@/scripts/bench/compare';
 import { flowGoals, runFlow } from '@/scripts/bench/flow-run';
 import { memoryGoal, speedGoals, workersGoal } from '@/scripts/bench/goals';
 import { memoryTable, renderFrames, runMemory, type MemoryRun } from '@/scripts/bench/memory-run';
+import { loadTable, runLoad } from '@/scripts/bench/load-run';
+import { productMemoryTable, runProductMemory } from '@/scripts/bench/product-memory';
 import { makeRecording, type BenchRecording } from '@/scripts/bench/recording';
 import { accuracyTable, speedTable } from '@/scripts/bench/report';
 import { runWorkers, workersTable, type WorkersStack } from '@/scripts/bench/workers-run';
@@ -37,6 +39,8 @@ const { values: options } = parseArgs({
     memory: { type: 'boolean', default: false },
     /** The kernels of the flow alone. */
     flow: { type: 'boolean', default: false },
+    load: { type: 'boolean', default: false },
+    'product-memory': { type: 'string' },
   },
 });
 const folder = await mkdtemp(join(tmpdir(), 'beadline-bench-'));
@@ -117,11 +121,18 @@ async function measureMemory(): Promise<void> {
   summary.push(memoryGoal(runs));
 }
 
-try {
-  const load = loadavg()[0].toFixed(1);
-  say(
-    `Beadline ${codeVersion()}, Node ${process.version}, ${cpus().length} x ${cpus()[0]?.model}, load ${load}, kernels ${chooseKernels().name}`,
-  );
+/** The whole product with stacks of so many frames, as in `600,6000`: 512 x 512 px of 16 bit are half a megabyte. */
+async function measureProduct(list: string): Promise<void> {
+  const rendered = renderFrames();
+  const runs = [];
+  for (const frames of list.split(',').map(Number)) {
+    note(`The whole product with ${frames} frames`);
+    runs.push(await runProductMemory(rendered, frames));
+  }
+  say(`\n${productMemoryTable(runs)}`);
+}
+
+async function measureCore(): Promise<void> {
   if (!options.flow) {
     const sparse = await compareOn('sparse');
     await compareOn('dense');
@@ -133,6 +144,16 @@ try {
   note('Velocities and candidates');
   summary.push(...flowGoals(await runFlow(options.quick)));
   say(`\n${summary.join('\n')}`);
+}
+
+try {
+  const load = loadavg()[0].toFixed(1);
+  say(
+    `Beadline ${codeVersion()}, Node ${process.version}, ${cpus().length} x ${cpus()[0]?.model}, load ${load}, kernels ${chooseKernels().name}`,
+  );
+  if (options.load) say(`\n${loadTable(await runLoad(note))}`);
+  else if (options['product-memory']) await measureProduct(options['product-memory']);
+  else await measureCore();
 } finally {
   await rm(folder, { recursive: true, force: true });
 }

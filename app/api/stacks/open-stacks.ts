@@ -1,4 +1,4 @@
-import { stackFolder } from '@/jobs/stack-folder';
+import { stackPlace } from '@/jobs/stack-store';
 import { LabError } from '@/lib/errors';
 import { openStack, type StackReader } from '@/stacks/open-stack';
 
@@ -24,7 +24,7 @@ export async function withStack<T>(
   work: (stack: StackReader) => Promise<T>,
 ): Promise<T> {
   const key = `${recordingId}:${version}`;
-  const entry = entries().get(key) ?? { reader: openStack(stackFolder(recordingId)), users: 0 };
+  const entry = entries().get(key) ?? { reader: stackPlace(recordingId).then(openStack), users: 0 };
   // Put in again at the end: the first entry is always the one not used for longest.
   entries().delete(key);
   entries().set(key, entry);

@@ -4,6 +4,7 @@ import { log } from '@/auth/log';
 import { execute, selectRow, selectRows } from '@/models/queries/select';
 import { forgetUpload, UPLOAD_COLUMNS, type UploadRow } from '@/models/queries/uploads';
 import { uploadsFolder } from '@/models/queries/received-bytes';
+import { sizeAtHome } from '@/jobs/stack-store';
 import { finishUpload } from './finish-upload';
 import { arrivedBytes, bytesFile, homeOf, removeUploadFiles, sizeOf } from './upload-files';
 import { isBeingSent, withUploadLock } from './upload-locks';
@@ -38,7 +39,7 @@ async function settle(id: string): Promise<void> {
   );
   if (!row) return;
   const stored = await sizeOf(bytesFile(row.id));
-  const atHome = stored === null ? await sizeOf(homeOf(row)) : null;
+  const atHome = stored === null ? await sizeAtHome(row.recordingId, homeOf(row)) : null;
   const complete = (stored !== null && (await arrivedBytes(row.id)) === row.bytes) || atHome === row.bytes;
   if (complete) {
     await finishUpload(row);

@@ -1,6 +1,8 @@
 import { open, readFile, rename, rm, stat, truncate, writeFile, mkdir } from 'node:fs/promises';
 import { dirname, join } from 'node:path';
 import { folderFile, stackFile } from '@/jobs/stack-folder';
+import { objectStore } from '@/jobs/object-store';
+import { sizeAtHome, storeFile } from '@/jobs/stack-store';
 import type { UploadRow } from '@/models/queries/uploads';
 import { uploadsFolder } from '@/models/queries/received-bytes';
 
@@ -53,8 +55,13 @@ export async function moveHome(
 ): Promise<void> {
   const from = bytesFile(row.id);
   const to = homeOf(row);
+  if ((await sizeOf(from)) === null && (await sizeAtHome(row.recordingId, to)) === row.bytes) return;
+  if (objectStore()) {
+    await storeFile(row.recordingId, from, to);
+    await rm(from);
+    return;
+  }
   await mkdir(dirname(to), { recursive: true });
-  if ((await sizeOf(from)) === null && (await sizeOf(to)) === row.bytes) return;
   await flush(from);
   await rename(from, to);
   await flush(dirname(to));

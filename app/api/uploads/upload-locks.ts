@@ -1,6 +1,6 @@
-import { limit } from '@/lib/env';
 import { LabError } from '@/lib/errors';
 import { setTimeout as pause } from 'node:timers/promises';
+import { inUploadSlot } from './upload-slots';
 import { askForSessionLock, onLockEvents, releaseSessionLock, trySessionLock } from '@/models/session-locks';
 
 /** A sender that has sent nothing for this long has probably gone without saying so, ms. */
@@ -48,23 +48,20 @@ export async function withUploadLock<T>(
   work: (holder: Holder) => Promise<T>,
 ): Promise<T> {
   await cutIdle(id);
-  const most = limit('uploadsAtOnce');
-  const sending = [...holders().values()].filter((other) => other.userId === userId).length;
-  if (sending >= most) {
-    throw new LabError('TOO_MANY', `At most ${most} uploads at once.`, { headers: { 'Retry-After': '5' } });
-  }
   let leave: () => void = () => undefined;
   const gone = new Promise<void>((resolve) => (leave = resolve));
   const holder: Holder = { userId, lastByteAtMs: Date.now(), cut: () => undefined, gone };
   if (holders().has(id)) throw beingSent();
   holders().set(id, holder);
   try {
-    if (!(await takeLock(lockOf(id)))) throw beingSent();
-    try {
-      return await work(holder);
-    } finally {
-      await releaseSessionLock(lockOf(id));
-    }
+    return await inUploadSlot(userId, async () => {
+      if (!(await takeLock(lockOf(id)))) throw beingSent();
+      try {
+        return await work(holder);
+      } finally {
+        await releaseSessionLock(lockOf(id));
+      }
+    });
   } finally {
     holders().delete(id);
     leave();

@@ -2,7 +2,7 @@ import { existsSync, readFileSync } from 'node:fs';
 import { appendFile, mkdir, rename } from 'node:fs/promises';
 import { join } from 'node:path';
 import pg from 'pg';
-import { describe, expect, it } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import { reconcileUploads } from '@/app/api/uploads/reconcile-uploads';
 import { models } from '@/models';
 import { selectRow } from '@/models/queries/select';
@@ -60,6 +60,21 @@ describe('one sender at a time', () => {
     expect((await patch(location, 0, bytes.subarray(0, 10))).status).toBe(204);
     expect(await trySessionLock(`upload:${id}`)).toBe(true);
     await releaseSessionLock(`upload:${id}`);
+  });
+
+  it('uploads that a person sends to other processes count among those at once', async () => {
+    const { location } = await begin();
+    vi.stubEnv('BEADLINE_LIMIT_UPLOADS_AT_ONCE', '1');
+    const other = new pg.Client({ connectionString: bench.database.url });
+    await other.connect();
+    const place = `upload-slot:${bench.rows.userId}:0`;
+    await other.query('SELECT pg_advisory_lock(hashtextextended($1, 0))', [place]);
+    const refused = await patch(location, 0, bytes.subarray(0, 10));
+    expect([refused.status, refused.headers.get('retry-after')]).toEqual([429, '5']);
+    expect(((await refused.json()) as { detail: string }).detail).toBe('At most 1 uploads at once.');
+    await other.end();
+    expect((await patch(location, 0, bytes.subarray(0, 10))).status).toBe(204);
+    vi.unstubAllEnvs();
   });
 
   it('when the connection that holds the locks is lost its sender is cut off, since others may write from then on', async () => {
