@@ -1,4 +1,4 @@
-import { mkdir, rename, rm } from 'node:fs/promises';
+import { mkdir, rm } from 'node:fs/promises';
 import { join } from 'node:path';
 import { codeVersion } from '@/lib/env';
 import { LabError } from '@/lib/errors';
@@ -10,7 +10,7 @@ import { planAnalyses } from '@/models/queries/export-plan';
 import { advanceExport, endExport, exportWork, finishExport } from '@/models/queries/exports';
 import { buildExportJob } from './build-export';
 import { buildPackage } from './exports/build-package';
-import { dropExport, packageFile, workFolder } from './exports/export-folder';
+import { dropExport, placePackage, storePackage, workFolder } from './exports/export-folder';
 import { keepOnce, readKept } from './exports/kept-json';
 import { FinalFailure } from './final-failure';
 import type { JobHandler } from './job-context';
@@ -40,8 +40,9 @@ export const buildExportHandler: JobHandler = {
       const plan = await planOf(labId, folder, work, attempt);
       const built = await buildPackage({ labId, plan, folder, attempt, signal, tell });
       await telling;
+      await storePackage(subjectId, built.path);
       await commit(async (transaction) => {
-        await rename(built.path, packageFile(subjectId));
+        await placePackage(subjectId, built.path);
         const name = `${packageName(plan)}.zip`;
         await finishExport(subjectId, { name, bytes: built.bytes, sha256: built.sha256, days: EXPORT_DAYS }, transaction); // prettier-ignore
       });

@@ -17,9 +17,25 @@ interface SentFile {
  * and 13.1.5). Ranges of any other kind get the whole file.
  */
 export async function sendFile(request: Request, path: string, file: SentFile): Promise<Response> {
-  const { size } = await stat(path).catch(() => {
-    throw new LabError('GONE', 'The file is no longer stored.');
+  const found = await stat(path).catch(() => null);
+  return sendBytes(request, found?.size ?? null, file, async (start, end) => {
+    const stream = createReadStream(path, { start, end, highWaterMark: 1 << 18 });
+    return Readable.toWeb(stream) as ReadableStream<Uint8Array>;
   });
+}
+
+/**
+ * The same for bytes that lie anywhere.
+ * @param size null where they are no longer stored
+ * @param read bytes from the first to the last that is named
+ */
+export async function sendBytes(
+  request: Request,
+  size: number | null,
+  file: SentFile,
+  read: (from: number, to: number) => Promise<ReadableStream<Uint8Array>>,
+): Promise<Response> {
+  if (size === null) throw new LabError('GONE', 'The file is no longer stored.');
   const etag = `"${file.tag}"`;
   const ifRange = request.headers.get('if-range');
   const range = ifRange === null || ifRange === etag ? rangeOf(request.headers.get('range'), size) : null;
@@ -37,8 +53,7 @@ export async function sendFile(request: Request, path: string, file: SentFile): 
   const [from, to] = range ?? [0, size - 1];
   headers['Content-Length'] = String(to - from + 1);
   if (range) headers['Content-Range'] = `bytes ${from}-${to}/${size}`;
-  const stream = Readable.toWeb(createReadStream(path, { start: from, end: to, highWaterMark: 1 << 18 }));
-  return new Response(stream as ReadableStream<Uint8Array>, { status: range ? 206 : 200, headers });
+  return new Response(await read(from, to), { status: range ? 206 : 200, headers });
 }
 
 /** First and last byte of a single range; null for none, or several. */

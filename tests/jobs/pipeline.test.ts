@@ -1,12 +1,11 @@
 import { execFile } from 'node:child_process';
-import { copyFile, mkdtemp, readdir, readFile, rm, writeFile } from 'node:fs/promises';
+import { mkdtemp, readFile, rm, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { promisify } from 'node:util';
 import { afterAll, afterEach, beforeAll, expect, test } from 'vitest';
 import { closeDoorbell } from '@/jobs/doorbell';
-import { stackFile, stackFolder, stripFile } from '@/jobs/stack-folder';
-import { readStackFile, storeFile } from '@/jobs/stack-store';
+import { stackFile } from '@/jobs/stack-folder';
 import { startAnalysis } from '@/jobs/start-analysis';
 import { models } from '@/models';
 import type { Analysis } from '@/models/analysis';
@@ -18,7 +17,6 @@ import { concatSpots, decodeSpots, encodeSpots } from '@/tracking/spots';
 import { arriveRecording, checked, CONDITIONS } from '../helpers/demo-recording';
 import { freshDatabase, type FreshDatabase } from '../helpers/fresh-database';
 import { makeLab, type LabRows } from '../helpers/lab-rows';
-import { fakeStore } from '../helpers/object-store';
 import { serverTables } from '../helpers/server-tables';
 import { until } from '../helpers/until';
 import { bundle, startWorkerProcess, type WorkerProcessHandle } from '../helpers/worker-process';
@@ -63,17 +61,11 @@ afterAll(async () => {
   process.env.BEADLINE_DATA = dataBefore;
 });
 
-function analyse({
-  chunkFrames,
-  of = recording,
-}: {
-  chunkFrames: number;
-  of?: Recording;
-}): Promise<Analysis> {
+function analyse({ chunkFrames }: { chunkFrames: number }): Promise<Analysis> {
   const { labId, userId } = lab;
   return getSequelize().transaction((transaction) =>
     startAnalysis(
-      { labId, recording: of, conditions: CONDITIONS, recipeRequest: {}, userId, chunkFrames },
+      { labId, recording, conditions: CONDITIONS, recipeRequest: {}, userId, chunkFrames },
       transaction,
     ),
   );
@@ -177,42 +169,6 @@ test(
     expect(await serverTables(analysis)).toEqual(expected);
     const held = await models().JobRun.findAll({ where: { subjectId: analysis.id, state: 'running' } });
     expect(held).toEqual([]);
-  },
-  3 * MINUTES,
-);
-
-test(
-  'two workers on two folders that share a database and an object store give the same tables, byte for byte',
-  async () => {
-    const store = await fakeStore();
-    const folders = [join(folder, 'machine-1'), join(folder, 'machine-2')];
-    try {
-      const copied = await arriveRecording(lab, (path) => copyFile(stackFile(recording.id), path));
-      process.env.BEADLINE_S3_URL = store.url;
-      // The bytes are in the store and nowhere else, as after an upload to another machine.
-      await storeFile(copied.id, stackFile(copied.id), stackFile(copied.id));
-      await rm(stackFolder(copied.id), { recursive: true });
-      const machines = folders.map((data) =>
-        work({ BEADLINE_DATA: data, BEADLINE_S3_URL: store.url, BEADLINE_SILENCE_MS: '20000' }),
-      );
-      await Promise.all(machines.map((machine) => machine.id()));
-      expect(await checked(copied)).toMatchObject({ state: 'ready', sha256: recording.sha256 });
-      const analysis = await finished(await analyse({ chunkFrames: 2, of: copied }));
-      expect(await serverTables(analysis)).toEqual(expected);
-      const chunks = await models().JobRun.findAll({
-        where: { subjectId: analysis.id, kind: 'detect-spots' },
-      });
-      expect(new Set(chunks.map(({ workerId }) => workerId)).size).toBe(2);
-      expect(store.asked.get('GET range')).toBeGreaterThan(48);
-      // Pictures are there too, and no machine keeps a copy of the stack.
-      expect((await readStackFile(copied.id, stripFile(copied.id))).subarray(1, 4).toString()).toBe('PNG');
-      for (const data of folders)
-        await expect(readdir(join(data, 'stacks', copied.id))).rejects.toThrow('ENOENT');
-    } finally {
-      delete process.env.BEADLINE_S3_URL;
-      await endWorkers();
-      await store.end();
-    }
   },
   3 * MINUTES,
 );

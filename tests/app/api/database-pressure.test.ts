@@ -39,7 +39,7 @@ const makeCampaign = (name: string) =>
 describe('a database under pressure', () => {
   it('F11 with every connection in use the answer is 503 with a sentence and a time, and good once one is free', async () => {
     const ask = () => callJson<ProblemView>('GET', '/api/v1/campaigns', { token: person.token });
-    const { maxSize } = getSequelize().connectionManager.pool as unknown as { maxSize: number };
+    const { maxSize } = (getSequelize().connectionManager as unknown as { pool: { maxSize: number } }).pool;
     let release = () => undefined as void;
     const held = new Promise<void>((resolve) => (release = resolve));
     const holders = Array.from({ length: maxSize }, () => getSequelize().transaction(() => held));

@@ -1,7 +1,8 @@
 import { memberRoute, methods } from '@/app/api/member-route';
 import { noteDownload } from '@/app/api/operations/exports';
-import { sendFile } from '@/app/api/send-file';
-import { packageFile } from '@/jobs/exports/export-folder';
+import { sendBytes, sendFile } from '@/app/api/send-file';
+import { packageBytes, packageFile, packageKey } from '@/jobs/exports/export-folder';
+import { objectStore } from '@/jobs/object-store';
 import { LabError } from '@/lib/errors';
 import { getExport } from '@/models/queries/exports';
 
@@ -16,12 +17,14 @@ export const { GET, POST, PUT, PATCH, DELETE } = methods({
     if (found.state !== 'done' || !found.fileName || !found.sha256) {
       throw new LabError('NOT_COMPUTED', `There is no package yet: its building is ${found.state}.`);
     }
-    const response = await sendFile(request, packageFile(found.id), {
-      name: found.fileName,
-      type: 'application/zip',
-      tag: found.sha256,
-      requestId,
-    });
+    const file = { name: found.fileName, type: 'application/zip', tag: found.sha256, requestId };
+    const store = objectStore();
+    const response = store
+      ? await sendBytes(request, await packageBytes(found.id), file, async (from, to) => {
+          const { body } = await store.get(packageKey(found.id), `bytes=${from}-${to}`);
+          return body ?? new ReadableStream({ start: (controller) => controller.close() });
+        })
+      : await sendFile(request, packageFile(found.id), file);
     // Pieces of a download that goes on are not downloads of their own.
     if (response.status === 200) await noteDownload(viewer, found.id);
     return response;
