@@ -3,7 +3,7 @@ import { chmod, mkdtemp, rm, stat } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { setTimeout as pause } from 'node:timers/promises';
-import { writeTiff } from '@/jobs/demo/write-tiff';
+import { writeTiff } from '@/jobs/write-tiff';
 import { newId } from '@/lib/ids';
 import { closeDatabase } from '@/models/database';
 import { makeLab } from '@/scripts/endure/make-lab';
