@@ -8,6 +8,7 @@ import { countResults } from './platform/count-results.mjs';
 import { ensurePackages } from './platform/ensure-packages.mjs';
 import { inRoot, ROOT } from './platform/paths.mjs';
 import { PlainStop } from './platform/plain-stop.mjs';
+import { ensurePythonReaders } from './platform/python-readers.mjs';
 import { endCommands } from './platform/run-command.mjs';
 import { sayOn } from './platform/say.mjs';
 import { migrate } from './platform/steps-of-start.mjs';
@@ -41,6 +42,8 @@ async function setUp() {
     NEXTAUTH_SECRET: 'a secret of the tests alone',
   };
   await migrate({ ...env, DATABASE_URL: templateUrl }, say);
+  if (selectsAny(args, 'tests/jobs/exports', ROOT))
+    Object.assign(env, { TEST_PYTHON: await ensurePythonReaders(say) });
   const withBrowser = selectsAny(args, 'tests/e2e', ROOT);
   if (withBrowser || selectsAny(args, 'tests/api', ROOT)) await ensureWebBuild(say);
   return withBrowser ? { ...env, TEST_CHROMIUM: await ensureChromium(say) } : env;

@@ -20,6 +20,7 @@ export default async function LabLayout({ children }: { children: ReactNode }) {
     ...(may(viewer, 'see-review') ? [{ href: '/review', label: 'Review', count: waiting }] : []),
     ...(may(viewer, 'see-data') ? [{ href: '/rehearsals', label: 'Rehearsals' }] : []),
     ...(may(viewer, 'compare') ? [{ href: '/compare', label: 'Compare' }] : []),
+    ...(may(viewer, 'see-exports') ? [{ href: '/exports', label: 'Exports' }] : []),
     { href: '/lab', label: 'Lab' },
   ];
   const labs = viewer.labs.map(({ id, name }) => ({ id, name, current: id === viewer.labId }));

@@ -1,3 +1,4 @@
+import Link from 'next/link';
 import { Section } from '@/components/ui/sheet';
 
 const FILES = [
@@ -21,16 +22,22 @@ export function DownloadsSection({ analysisId, reason }: DownloadsProps) {
       {reason ? (
         <p className="text-note text-ink-2">{reason}</p>
       ) : (
-        <ul className="text-note">
-          {FILES.map(({ name, holds }) => (
-            <li key={name} className="py-[3px]">
-              <a href={`/api/v1/analyses/${analysisId}/${name}`} download={name}>
-                {name}
-              </a>
-              <span className="text-ink-2"> {holds}</span>
-            </li>
-          ))}
-        </ul>
+        <>
+          <ul className="text-note">
+            {FILES.map(({ name, holds }) => (
+              <li key={name} className="py-[3px]">
+                <a href={`/api/v1/analyses/${analysisId}/${name}`} download={name}>
+                  {name}
+                </a>
+                <span className="text-ink-2"> {holds}</span>
+              </li>
+            ))}
+          </ul>
+          <p className="pt-1 text-note">
+            <Link href={`/exports?analysis=${analysisId}`}>Put it in a data package</Link>
+            <span className="text-ink-2"> with HDF5, Parquet, NumPy, figures, licence and contributors</span>
+          </p>
+        </>
       )}
     </Section>
   );

@@ -16,7 +16,11 @@ export interface FigureFiles {
 }
 
 /** The figures of an analysis as files at the widths of journals. */
-export function figuresOf({ measures }: PlannedAnalysis): FigureFiles[] {
+export function figuresOf({
+  measures,
+}: {
+  measures: Pick<PlannedAnalysis['measures'], 'pdfs' | 'motion' | 'estimates'>;
+}): FigureFiles[] {
   const { pdfs, motion, estimates } = measures;
   const prepared = { pdfs: pdfs.map(pdfView), motion: motion && motionView(motion), estimates };
   return analysisFigures(prepared).map(({ name, title, draw, table }) => ({
