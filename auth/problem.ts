@@ -59,6 +59,11 @@ export function asLabError(thrown: unknown): LabError {
       headers: { 'Retry-After': '5' },
     });
   }
+  if (isSealed(thrown)) {
+    return new LabError('STATE', "This analysis was signed off: it can't be changed any more.", {
+      cause: thrown,
+    });
+  }
   if (thrown instanceof UniqueConstraintError) {
     return new LabError('STATE', 'The same thing exists already.', { cause: thrown });
   }
@@ -70,6 +75,10 @@ export function asLabError(thrown: unknown): LabError {
     },
   );
 }
+
+/** The database's own refusal, for a change that slipped past every check before it. */
+const isSealed = (thrown: unknown): boolean =>
+  (thrown as { original?: { code?: string } } | null)?.original?.code === 'BL001';
 
 export function problemBody(error: LabError, requestId: string): ProblemBody {
   const body: ProblemBody = {

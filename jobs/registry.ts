@@ -8,6 +8,7 @@ import type { JobHandler } from './job-context';
 import { linkTracksHandler } from './link-tracks.handler';
 import { measureFlowHandler } from './measure-flow.handler';
 import { measureImageHandler } from './measure-image.handler';
+import { remeasureTracksHandler } from './remeasure-tracks.handler';
 import { sendMailHandler } from './send-mail.handler';
 import { simulateRehearsalHandler } from './simulate-rehearsal.handler';
 
@@ -17,6 +18,7 @@ const handlers = [
   detectSpotsHandler,
   linkTracksHandler,
   measureFlowHandler,
+  remeasureTracksHandler,
   sendMailHandler,
   checkFilesHandler,
   composeStripsHandler,

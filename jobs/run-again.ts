@@ -20,6 +20,7 @@ import type { JobDefinition } from './job-definition';
 import { linkTracksJob } from './link-tracks';
 import { measureFlowJob } from './measure-flow';
 import { measureImageJob } from './measure-image';
+import { remeasureTracksJob } from './remeasure-tracks';
 import { sendMailJob } from './send-mail';
 import { simulateRehearsalJob } from './simulate-rehearsal';
 
@@ -30,6 +31,7 @@ const DEFINITIONS: readonly Known[] = [
   detectSpotsJob,
   linkTracksJob,
   measureFlowJob,
+  remeasureTracksJob,
   sendMailJob,
   checkFilesJob,
   composeStripsJob,
@@ -92,7 +94,7 @@ const findJob = (labId: string, jobId: string, lock: string, transaction: Transa
 
 /** Brings the locked subject of failed work back to where the work can go on. */
 async function revive(
-  { subject }: Known,
+  { kind, subject }: Known,
   labId: string,
   subjectId: string,
   transaction: Transaction,
@@ -101,6 +103,8 @@ async function revive(
   if (subject === 'export') return reviveExport(subjectId, transaction);
   if (subject === 'rehearsal') return reviveRehearsal(subjectId, transaction);
   if (subject === 'recording') return reviveRecording(labId, subjectId, transaction);
+  // New measures of a finished analysis: it did not fail with them.
+  if (kind === remeasureTracksJob.kind) return;
   if (subject === 'analysis') return reviveAnalysis(labId, subjectId, transaction);
 }
 

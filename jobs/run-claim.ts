@@ -179,6 +179,7 @@ const DOING: Record<string, string> = {
   'measure-image': 'measuring the image',
   'link-tracks': 'linking tracks',
   'measure-flow': 'measuring the flow',
+  'remeasure-tracks': 'measuring corrected tracks',
   'send-mail': 'sending a mail',
   'check-files': 'checking stored files',
   'build-export': 'building a data package',

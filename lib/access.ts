@@ -84,6 +84,12 @@ export const ACTIONS = {
     scope: 'write',
     grants: { experimentalist: 'own', analyst: 'own', principal_investigator: 'yes' },
   },
+  'correct-tracks': {
+    scope: 'review',
+    grants: { experimentalist: 'yes', annotator: 'yes', principal_investigator: 'yes' },
+  },
+  // What is signed off can't be changed by anybody, the principal investigator included.
+  'sign-off': { scope: 'review', grants: { principal_investigator: 'yes' } },
   'save-recipe': {
     scope: 'write',
     grants: { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' },

@@ -40,6 +40,10 @@ export const AUDIT_WORDS: Record<string, string> = {
   'export.started': 'asked for the data package',
   'export.stopped': 'stopped the data package',
   'export.downloaded': 'downloaded the data package',
+  'analysis.corrected': 'corrected tracks of',
+  'analysis.corrections-restored': 'led tracks back to an earlier revision in',
+  'analysis.corrections-carried': 'carried corrections to a newer analysis of',
+  'analysis.signed-off': 'signed off an analysis of',
 };
 
 /** Kinds of acts to choose from: the part before the point takes all of its kind. */

@@ -22,6 +22,8 @@ const LIMITS = {
   labBytes: 5e12,
   nightlyCheckBytes: 100e9,
   childMemoryMB: 2048,
+  // After a correction, results are measured again once nobody has corrected for so long.
+  quietSeconds: 60,
 } as const;
 
 export type LimitName = keyof typeof LIMITS;

@@ -4,7 +4,9 @@ import * as indexPointsByTrack from './20261201121000-index-points-by-track';
 import * as addUploadMetadataAndQuota from './20261201122000-add-upload-metadata-and-quota';
 import * as addMotionMeasures from './20261201130000-add-motion-measures';
 import * as addMailAndFileChecks from './20261201140000-add-mail-and-file-checks';
+import * as addCorrections from './20261201150000-add-corrections';
 import * as addVerdicts from './20261201151000-add-verdicts';
+import * as sealVerdicts from './20261201151500-seal-verdicts';
 import * as addFlowDetails from './20261201153000-add-flow-details';
 import * as addRehearsals from './20261201154000-add-rehearsals';
 import * as rememberWhatAKeyMade from './20261201155000-remember-what-a-key-made';
@@ -24,7 +26,9 @@ export const migrations: Migration[] = [
   { name: '20261201122000-add-upload-metadata-and-quota', ...addUploadMetadataAndQuota },
   { name: '20261201130000-add-motion-measures', ...addMotionMeasures },
   { name: '20261201140000-add-mail-and-file-checks', ...addMailAndFileChecks },
+  { name: '20261201150000-add-corrections', ...addCorrections },
   { name: '20261201151000-add-verdicts', ...addVerdicts },
+  { name: '20261201151500-seal-verdicts', ...sealVerdicts },
   { name: '20261201152000-add-exports', ...addExports },
   { name: '20261201153000-add-flow-details', ...addFlowDetails },
   { name: '20261201154000-add-rehearsals', ...addRehearsals },

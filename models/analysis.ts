@@ -28,6 +28,10 @@ export class Analysis extends Model<InferAttributes<Analysis>, InferCreationAttr
   declare summary: CreationOptional<AnalysisSummary | null>;
   declare spotsPerFrame: CreationOptional<number[] | null>;
   declare tracksRevision: CreationOptional<number>;
+  declare staleSince: CreationOptional<Date | null>;
+  declare signedOffAt: CreationOptional<Date | null>;
+  declare signedOffBy: CreationOptional<string | null>;
+  declare contentHash: CreationOptional<string | null>;
   declare codeVersion: string;
   declare errorCode: CreationOptional<string | null>;
   declare errorDetail: CreationOptional<string | null>;
@@ -58,6 +62,10 @@ export class Analysis extends Model<InferAttributes<Analysis>, InferCreationAttr
         summary: DataTypes.JSONB,
         spotsPerFrame: DataTypes.ARRAY(DataTypes.INTEGER),
         tracksRevision: DataTypes.INTEGER,
+        staleSince: DataTypes.DATE,
+        signedOffAt: DataTypes.DATE,
+        signedOffBy: DataTypes.UUID,
+        contentHash: DataTypes.TEXT,
         codeVersion: DataTypes.TEXT,
         errorCode: DataTypes.TEXT,
         errorDetail: DataTypes.TEXT,

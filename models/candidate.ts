@@ -21,6 +21,8 @@ export class Candidate extends Model<InferAttributes<Candidate>, InferCreationAt
   declare qValue: CreationOptional<number | null>;
   declare accepted: boolean;
   declare facts: CandidateFacts;
+  /** Revision of the tracks from which on it is no candidate any more. */
+  declare endedRevision: CreationOptional<number | null>;
   declare revision: CreationOptional<number>;
   declare createdAt: CreationOptional<Date>;
   declare updatedAt: CreationOptional<Date>;
@@ -39,6 +41,7 @@ export class Candidate extends Model<InferAttributes<Candidate>, InferCreationAt
         qValue: DataTypes.DOUBLE,
         accepted: DataTypes.BOOLEAN,
         facts: DataTypes.JSONB,
+        endedRevision: DataTypes.INTEGER,
         revision: DataTypes.INTEGER,
         createdAt: DataTypes.DATE,
         updatedAt: DataTypes.DATE,

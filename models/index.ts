@@ -4,6 +4,7 @@ import { ApiToken } from './api-token';
 import { AuditEntry } from './audit-entry';
 import { Campaign } from './campaign';
 import { Candidate } from './candidate';
+import { CorrectionRow } from './correction-row';
 import { Folder } from './folder';
 import { JobRun } from './job-run';
 import { Lab } from './lab';
@@ -22,6 +23,7 @@ const classes = {
   AuditEntry,
   Campaign,
   Candidate,
+  CorrectionRow,
   Folder,
   JobRun,
   Lab,

@@ -47,7 +47,31 @@ const ELONGATION_FLAGGED = 15;
 export interface Detector {
   /** Appends the spots of a frame to the sink, by y, then x. */
   detect(frame: Frame, frameIndex: number, sink: SpotSink): void;
+  /**
+   * The spot that a person points to: the nearest one that is found within `reachPx`; else, where the
+   * frame holds light that was too faint to be found, the same fit begun at the place, together with
+   * its neighbours. Null where no light fits there within `reachPx`.
+   */
+  placeAt(frame: Frame, frameIndex: number, xPx: number, yPx: number, reachPx: number): PlacedSpot | null;
 }
+
+/** A spot at a place that was asked for. */
+export interface PlacedSpot {
+  xPx: number;
+  yPx: number;
+  /** Standard errors of the position, px. */
+  sxPx: number;
+  syPx: number;
+  /** Photoelectrons. */
+  brightness: number;
+  /** Matched-filter response in units of the local noise. */
+  snr: number;
+  /** Whether the detector finds it by itself. */
+  found: boolean;
+}
+
+/** Light that a person points to counts from this many of its standard errors on. */
+const POINTED_SIGMAS_LEAST = 2;
 
 /**
  * Spots as a test of hypotheses: the frame in units of its own noise is correlated with the spot's
@@ -221,7 +245,7 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
     return false;
   };
 
-  const detect: Detector['detect'] = (frame, frameIndex, sink) => {
+  const search = (frame: Frame, frameIndex: number) => {
     if (frame.width !== width || frame.height !== height) {
       throw new RangeError(
         `A frame of ${frame.width} x ${frame.height} px came when ${width} x ${height} were expected.`,
@@ -231,15 +255,70 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
     propose();
     fitGroups();
     table.index(width, height, Math.max(TOGETHER_SIGMAS, OVERLAP_SIGMAS) * sigma);
-    const { x, y, sx, sy, sn, n, response: snr, doubtX, doubtY, alive } = table;
+  };
+
+  const isSpot = (i: number): boolean => {
+    const { x, y, sx, sy, alive } = table;
+    const inside = x[i] >= -0.5 && y[i] >= -0.5 && x[i] < width - 0.5 && y[i] < height - 0.5;
+    return alive[i] === 1 && inside && sx[i] < Infinity && sy[i] < Infinity;
+  };
+
+  const detect: Detector['detect'] = (frame, frameIndex, sink) => {
+    search(frame, frameIndex);
+    const { x, y, sx, sy, sn, n, response: snr, doubtX, doubtY } = table;
     for (const i of order.byPlace(table)) {
-      const inside = x[i] >= -0.5 && y[i] >= -0.5 && x[i] < width - 0.5 && y[i] < height - 0.5;
-      if (alive[i] === 0 || !inside || !(sx[i] < Infinity && sy[i] < Infinity)) continue;
+      if (!isSpot(i)) continue;
       const certainty = n[i] / sn[i];
       const errorX = statedError(sx[i], certainty, doubtX[i]);
       const errorY = statedError(sy[i], certainty, doubtY[i]);
       sink.push(frameIndex, x[i], y[i], errorX, errorY, n[i], snr[i], flagsOf(i));
     }
   };
-  return { detect };
+
+  const placed = (i: number, found: boolean): PlacedSpot => {
+    const certainty = table.n[i] / table.sn[i];
+    return {
+      xPx: table.x[i],
+      yPx: table.y[i],
+      sxPx: statedError(table.sx[i], certainty, table.doubtX[i]),
+      syPx: statedError(table.sy[i], certainty, table.doubtY[i]),
+      brightness: table.n[i],
+      snr: table.response[i],
+      found,
+    };
+  };
+
+  const placeAt: Detector['placeAt'] = (frame, frameIndex, xPx, yPx, reachPx) => {
+    search(frame, frameIndex);
+    const away = (i: number) => Math.hypot(table.x[i] - xPx, table.y[i] - yPx);
+    let nearest = -1;
+    for (let i = 0; i < table.count; i++) {
+      if (isSpot(i) && away(i) <= reachPx && (nearest < 0 || away(i) < away(nearest))) nearest = i;
+    }
+    if (nearest >= 0) return placed(nearest, true);
+    return fitPointed(xPx, yPx, away, reachPx);
+  };
+
+  /** Fits a spot begun at a place, together with those around it; kept on weaker grounds than one that nobody asked for. */
+  const fitPointed = (
+    xPx: number,
+    yPx: number,
+    away: (i: number) => number,
+    reachPx: number,
+  ): PlacedSpot | null => {
+    const at = Math.round(yPx) * width + Math.round(xPx);
+    const noise = Math.sqrt(pictures.bareAt(at) + readVariance);
+    const seen = Math.max(response[at], 1);
+    const i = table.add(xPx, yPx, (seen * noise) / pictures.kernel.squares, response[at]);
+    // Somebody sees it: it is not dropped as what likelihood alone would not have told from noise.
+    table.toldApart[i] = 1;
+    fits.paint(table.x[i], table.y[i], table.n[i]);
+    table.index(width, height, Math.max(TOGETHER_SIGMAS * sigma, 2 * reach + 1));
+    table.group.fill(-1, 0, table.count);
+    setOffsetSpread(i);
+    fitter.fit(table, members, gather(i), false, 0, 0);
+    const certain = table.n[i] > POINTED_SIGMAS_LEAST * table.sn[i];
+    return isSpot(i) && certain && away(i) <= reachPx ? placed(i, false) : null;
+  };
+  return { detect, placeAt };
 }

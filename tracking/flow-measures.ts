@@ -107,7 +107,19 @@ export interface ImageSize {
   frames: number;
 }
 
+/** What is known of some tracks beforehand; entry i of each belongs to track i. */
+export interface KnownPopulations {
+  /** 1 where population and probability stand, 2 where a person gave the population; 0 where they are to be found. */
+  known: Uint8Array;
+  /** Codes of `POPULATIONS`. */
+  population: Uint8Array;
+  /** NaN where there is none, as where a person decided. */
+  pTrapped: Float32Array;
+}
+
 export interface MeasureFlowOptions {
+  /** Populations of tracks that stand, as of tracks that a correction left alone. */
+  known?: KnownPopulations;
   /** Told the share done, 0 to 1, and what is being done. */
   onProgress?: (
     share: number,

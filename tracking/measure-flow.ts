@@ -9,6 +9,7 @@ import { lineDensityEstimates } from './estimates/line-density-estimates';
 import type { FlowDetails, FlowMeasures, ImageSize, MeasureFlowOptions } from './flow-measures';
 import { findCandidates } from './pairs/find-candidates';
 import { piecesOf, segmentsOf, type Pieces } from './populations/pieces';
+import { applyKnown } from './populations/known-populations';
 import { findPopulations } from './populations/populations';
 import { velocityTails } from './tails/velocity-tails';
 import { trackMeans } from './track-means';
@@ -32,7 +33,8 @@ export function measureFlow(
 ): FlowMeasures {
   const progress = options.onProgress ?? (() => undefined);
   progress(0, 'populations');
-  const found = findPopulations(tracks, image, conditions, recipe);
+  const judged = findPopulations(tracks, image, conditions, recipe);
+  const found = options.known ? applyKnown(judged, options.known) : judged;
   // A track that is caught by a line half-way counts as free before and as trapped from then on.
   const pieces = piecesOf(tracks, found.population, found.changes);
   const { tracks: all, population } = pieces;

@@ -16,6 +16,7 @@ import * as lab from '@/lib/views/lab-view';
 import { recipeViewSchema } from '@/lib/views/recipe-view';
 import { recordingViewSchema, uploadViewSchema } from '@/lib/views/recording-view';
 import { runViewSchema } from '@/lib/views/run-view';
+import { CORRECTION_ROUTES } from './correction-routes';
 import { LAB_ROUTES } from './lab-routes';
 import { REVIEW_ROUTES } from './review-routes';
 import { REHEARSAL_ROUTES } from './rehearsal-routes';
@@ -312,6 +313,7 @@ export const ROUTES = {
 
   ...REVIEW_ROUTES,
   ...REHEARSAL_ROUTES,
+  ...CORRECTION_ROUTES,
   ...LAB_ROUTES,
 } as const satisfies Record<string, ApiRoute>;
 

@@ -19,5 +19,9 @@ export function trackWindowView(window: TrackWindow, from: number, to: number): 
     x: Array.from(window.xPx, short),
     y: Array.from(window.yPx, short),
     flags: Array.from(window.flags),
+    changed: Array.from(window.track).filter((_, i) => window.changed[i] === 1),
+    given: Array.from(window.given, ([track, stretches]) =>
+      stretches.map(([from, to, population]) => ({ track, from, to, population })),
+    ).flat(),
   };
 }

@@ -1,6 +1,7 @@
 'use client';
 
 import { useState } from 'react';
+import { StandingSection } from '@/components/corrections/standing-section';
 import { SpotsPlot } from '@/components/charts/spots-plot';
 import { TrackViewer } from '@/components/canvas/track-viewer';
 import { useViewer, useViewerStore } from '@/components/canvas/use-viewer';
@@ -42,6 +43,8 @@ interface AnalysisSheetProps {
   downloadReason: string | null;
   /** The way to the review desk, for those who have something to do there. */
   judge: { href: string; label: string } | null;
+  /** Why this person can't sign off; null where they may. */
+  signOffReason: string | null;
 }
 
 const TWO_COLUMNS =
@@ -57,6 +60,7 @@ export function AnalysisSheet({
   stopReason,
   downloadReason,
   judge,
+  signOffReason,
 }: AnalysisSheetProps) {
   const { data: analysis = initial, isError } = useProgress(initial.id, initial);
   const done = analysis.state === 'done';
@@ -157,6 +161,7 @@ export function AnalysisSheet({
           ) : (
             notYet
           )}
+          {done ? <StandingSection analysis={analysis} signOffReason={signOffReason} /> : null}
           <ProvenanceSection analysis={analysis} sha256={recording.sha256} />
           <DownloadsSection
             analysisId={initial.id}

@@ -12,14 +12,16 @@ export const isFinal = (analysis: Pick<AnalysisView, 'state'>) => FINAL_STATES.i
 
 /**
  * An analysis as it stands.
- * @param refreshMs asks again this often until it is final; false where the stream brings news.
+ * @param refreshMs asks again this often until it is final and its results fit its tracks; false where the stream
+ *   brings news.
  */
 export function useAnalysis(id: string, initial: AnalysisView | undefined, refreshMs: number | false) {
   return useQuery({
     queryKey: analysisKey(id),
     queryFn: ({ signal }) => api<AnalysisView>(analysisPath(id), { signal }),
     initialData: initial,
-    refetchInterval: ({ state }) => (state.data && isFinal(state.data) ? false : refreshMs),
+    refetchInterval: ({ state }) =>
+      state.data && isFinal(state.data) && !state.data.staleSince ? false : refreshMs,
   });
 }
 

@@ -6,6 +6,7 @@ const KIND_WORDS: Record<string, string> = {
   'measure-flow': 'measure the flow',
   'simulate-rehearsal': 'simulate a rehearsal',
   'assess-rehearsal': 'compare a rehearsal with its truth',
+  'remeasure-tracks': 'measure corrected tracks',
   'send-mail': 'send a mail',
   'check-files': 'check stored files',
   'compose-strips': 'compose strips of candidates',
@@ -13,5 +14,8 @@ const KIND_WORDS: Record<string, string> = {
 };
 
 /** What a piece of work does: `find spots, chunk 3`. */
-export const jobWords = ({ kind, chunk }: { kind: string; chunk: number }): string =>
-  `${KIND_WORDS[kind] ?? kind}${chunk >= 0 ? `, chunk ${chunk + 1}` : ''}`;
+export function jobWords({ kind, chunk }: { kind: string; chunk: number }): string {
+  const words = KIND_WORDS[kind] ?? kind;
+  if (chunk < 0) return words;
+  return kind === 'remeasure-tracks' ? `${words}, revision ${chunk}` : `${words}, chunk ${chunk + 1}`;
+}

@@ -8,6 +8,7 @@ import { linkTracks } from './steps/link-tracks';
 import { measureFlow } from './steps/measure-flow';
 import { measureImage } from './steps/measure-image';
 import { simulateStack } from './steps/simulate-stack';
+import { refinePoint } from './steps/refine-point';
 import { tryRecipe } from './steps/try-recipe';
 import type { WorkContext } from './steps/work-context';
 
@@ -23,6 +24,7 @@ const WORK: Work = {
   composeStrips,
   simulateStack,
   assessRehearsal,
+  refinePoint,
 };
 
 /** Progress is told so often at most, ms. */

@@ -3,10 +3,11 @@ import type { Film } from '@/lib/review/film';
 import type { FilmPathView } from '@/lib/views/review-view';
 import type { StackReport, StackSource } from '@/stacks/stack-report';
 import type { StackPlace } from '@/stacks/stack-place';
-import type { FlowMeasures, ImageSize } from '@/tracking/flow-measures';
 import type { RehearsalFound } from '@/tracking/rehearsal/assess-rehearsal';
 import type { RehearsalAssessment } from '@/tracking/rehearsal/assessment';
 import type { RehearsalPlan } from '@/tracking/rehearsal/plan';
+import type { FlowMeasures, ImageSize, KnownPopulations } from '@/tracking/flow-measures';
+import type { PlacedSpot } from '@/tracking/detect';
 import type { Conditions, Recipe, RecipeRequest, Spots, Tracks } from '@/tracking/types';
 
 // What is computed in child processes: plain data in, plain data out, no database, no network.
@@ -68,6 +69,24 @@ export interface MeasureFlowInput {
   image: ImageSize;
   conditions: Conditions;
   recipe: Recipe;
+  /** Populations of tracks that stand. */
+  known?: KnownPopulations;
+}
+
+/** Asks for the position of a tracer near a place in one frame. */
+export interface RefinePointInput {
+  stackDir: string;
+  model: Uint8Array;
+  /** Tells models apart: the same key always comes with the same model and recipe. */
+  modelKey: string;
+  recipe: Recipe;
+  frame: number;
+  xPx: number;
+  yPx: number;
+}
+export interface RefinePointOutput {
+  /** Null where no light of a tracer fits. */
+  spot: PlacedSpot | null;
 }
 
 export interface TryRecipeInput {
@@ -122,6 +141,7 @@ export interface Tasks {
   composeStrips: { input: ComposeStripsInput; output: number };
   simulateStack: { input: SimulateStackInput; output: SimulateStackOutput };
   assessRehearsal: { input: AssessRehearsalInput; output: RehearsalAssessment };
+  refinePoint: { input: RefinePointInput; output: RefinePointOutput };
 }
 export type TaskName = keyof Tasks;
 export type TaskInput<K extends TaskName> = Tasks[K]['input'];

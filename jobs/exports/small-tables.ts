@@ -53,7 +53,7 @@ export function reconnectionsPiece(
   candidates: readonly ReconnectionRow[],
   verdicts: readonly VerdictText[],
 ): TablePiece {
-  const rows = candidates.map((c, event) => [event, c.trackA, c.trackB, c.t0S, c.xPx, c.yPx, c.minSeparationM, c.before?.amplitude ?? null, c.after?.amplitude ?? null, c.before?.exponent ?? null, c.after?.exponent ?? null, c.pChance, c.qValue, verdicts[event] || null]); // prettier-ignore
+  const rows = candidates.map((c, place) => [c.event ?? place, c.trackA, c.trackB, c.t0S, c.xPx, c.yPx, c.minSeparationM, c.before?.amplitude ?? null, c.after?.amplitude ?? null, c.before?.exponent ?? null, c.after?.exponent ?? null, c.pChance, c.qValue, verdicts[c.event ?? place] || null]); // prettier-ignore
   return piece(table, rows, [...reconnectionsCsv(candidates, (event) => verdicts[event] ?? '')].join(''));
 }
 

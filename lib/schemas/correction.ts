@@ -75,3 +75,39 @@ export const refinePointSchema = z.strictObject({
   y_px: place('y_px'),
 });
 export type RefinePointInput = z.infer<typeof refinePointSchema>;
+
+/** Leads the tracks back to what they were after so many corrections. */
+export const restoreRevisionSchema = z.strictObject({
+  revision: z
+    .int('revision must be a whole number from 0.')
+    .min(0, 'revision must be a whole number from 0.')
+    .max(NUMBER_MAX, 'revision must be a whole number from 0.'),
+});
+
+/** Carries the corrections of another analysis of the same recording; `preview` only tells what would become. */
+export const carryCorrectionsSchema = z.strictObject({
+  from: z.uuid('from must be the id of an analysis.'),
+  preview: z.boolean('preview must be true or false.').default(false),
+});
+
+/** What a person has open, for others to see. */
+export const presencePostSchema = z.strictObject({
+  place: z
+    .enum(
+      ['analysis', 'editor', 'verdicts', 'history'],
+      'place must be analysis, editor, verdicts or history.',
+    )
+    .default('analysis'),
+  frame: frame('frame').nullish(),
+});
+
+/** Tracks asked for point by point at once. */
+const TRACKS_MOST = 100;
+
+export const trackPointsQuerySchema = z.strictObject({
+  tracks: z
+    .string('tracks must be numbers of tracks with commas between them.')
+    .regex(/^\d{1,9}(,\d{1,9})*$/, 'tracks must be numbers of tracks with commas between them.')
+    .transform((text) => text.split(',').map(Number))
+    .refine((numbers) => numbers.length <= TRACKS_MOST, `At most ${TRACKS_MOST} tracks at once.`),
+});

@@ -86,6 +86,15 @@ export const trackListQuery = listQuery(
   },
 );
 
+const wholeFilter = (name: string) => wholeInAddress(`${name} must be a whole number from 0.`).optional();
+
+export const correctionListQuery = listQuery(['revision'], {
+  /** Only those appended after a revision. */
+  after: wholeFilter('after'),
+  /** Only those that name a track, or made it. */
+  track: wholeFilter('track'),
+});
+
 export const candidateListQuery = listQuery(['event', 't0_s', 'qValue', 'minSeparation_m'], {
   accepted: z.enum(['true', 'false'], 'accepted must be true or false.').optional(),
 });

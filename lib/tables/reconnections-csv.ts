@@ -8,16 +8,19 @@ export const RECONNECTIONS_COLUMNS =
 export type VerdictText = 'yes' | 'no' | 'cannot-tell' | '';
 
 /** What a row needs of a candidate, so that stored candidates can be written without their series. */
-export type ReconnectionRow = Pick<
+export type ReconnectionRow = {
+  /** Number of the event; its place in the list where left out. */
+  event?: number;
+} & Pick<
   ReconnectionCandidate,
   'trackA' | 'trackB' | 't0S' | 'xPx' | 'yPx' | 'minSeparationM' | 'pChance' | 'qValue'
 > & {
-  before: Pick<NonNullable<ReconnectionCandidate['before']>, 'amplitude' | 'exponent'> | null;
-  after: Pick<NonNullable<ReconnectionCandidate['after']>, 'amplitude' | 'exponent'> | null;
-};
+    before: Pick<NonNullable<ReconnectionCandidate['before']>, 'amplitude' | 'exponent'> | null;
+    after: Pick<NonNullable<ReconnectionCandidate['after']>, 'amplitude' | 'exponent'> | null;
+  };
 
 /**
- * `reconnections.csv` in pieces; the event's number is its place in the list.
+ * `reconnections.csv` in pieces.
  * @param verdictOf the people's verdict on an event, empty where nobody judged.
  */
 export function reconnectionsCsv(
@@ -25,8 +28,9 @@ export function reconnectionsCsv(
   verdictOf: (event: number) => VerdictText = () => '',
 ): Generator<string> {
   function* rows() {
-    let event = 0;
+    let place = 0;
     for (const c of candidates) {
+      const event = c.event ?? place;
       yield [
         event,
         c.trackA,
@@ -43,7 +47,7 @@ export function reconnectionsCsv(
         significant(c.qValue, 6),
         verdictOf(event),
       ].join(',');
-      event++;
+      place++;
     }
   }
   return csvChunks(RECONNECTIONS_COLUMNS, rows());

@@ -1,3 +1,5 @@
+import { NOT_GIVEN, withGiven } from '@/tracking/corrections/edited-track';
+import { piecesOf } from '@/tracking/corrections/pieces';
 import type { TrackSegment } from '@/tracking/populations/pieces';
 import { trackSlice, type TrackSlice } from '@/tracking/track-slice';
 import { POPULATIONS, type Conditions, type Tracks } from '@/tracking/types';
@@ -13,10 +15,15 @@ export interface TableTrack extends TrackSlice {
   pTrapped: number;
   /** Stretches in different states, where the tracer was caught or came off within the track. */
   segments?: readonly TrackSegment[];
+  /** Populations that a person gave: first frame, last frame, code. Left out where there are none. */
+  given?: readonly GivenStretch[];
 }
 
 /** Population and probability of a track in one frame, as tables write them. */
 export function stateAt(track: TableTrack, frame: number): { population: string; pTrapped: number } {
+  // What a person says goes before what was found, and is no probability.
+  const given = givenAt(track, frame);
+  if (given !== null) return { population: populationText(given), pTrapped: Number.NaN };
   const segment = track.segments?.find(({ fromFrame, toFrame }) => frame >= fromFrame && frame <= toFrame);
   return segment ?? { population: populationText(track.population), pTrapped: track.pTrapped };
 }
@@ -27,6 +34,25 @@ export function segmentsByTrack(segments: readonly TrackSegment[]): Map<number, 
   for (const segment of segments)
     byTrack.set(segment.track, [...(byTrack.get(segment.track) ?? []), segment]);
   return byTrack;
+}
+
+/** A stretch of a track whose population a person gave: first frame, last frame, code of `POPULATIONS`. */
+export type GivenStretch = readonly [number, number, number];
+
+/** The code that a person gave to a frame of a track; null where none. */
+export function givenAt(track: Pick<TableTrack, 'given'>, frame: number): number | null {
+  const stretch = track.given?.find(([from, to]) => from <= frame && frame <= to);
+  return stretch ? stretch[2] : null;
+}
+
+/** A track cut where a population given by a person begins or ends, as it is measured. */
+export function tablePieces(track: TableTrack): TableTrack[] {
+  if (!track.given || track.given.length === 0) return [track];
+  return piecesOf(withGiven(track, track.given)).map(({ population, ...slice }) =>
+    population === NOT_GIVEN
+      ? { ...slice, population: track.population, pTrapped: track.pTrapped, segments: track.segments }
+      : { ...slice, population, pTrapped: Number.NaN },
+  );
 }
 
 /** Goes through tracks in order of their numbers; nothing is copied. */

@@ -50,6 +50,18 @@ export const analysisViewSchema = z.object({
     })
     .nullable(),
   error: z.object({ code: z.string(), detail: z.string() }).nullable(),
+  /** Corrections so far: the revision that the next one must name. */
+  correctionsRevision: count,
+  /** Since when the results are older than the tracks; null where they fit. */
+  staleSince: z.iso.datetime().nullable(),
+  signedOff: z
+    .object({
+      at: z.iso.datetime(),
+      by: personSchema.nullable(),
+      /** SHA-256 over everything that was signed off. */
+      contentHash: z.string(),
+    })
+    .nullable(),
   codeVersion: z.string(),
   createdBy: personSchema.nullable(),
   startedAt: z.iso.datetime().nullable(),
@@ -59,7 +71,7 @@ export type AnalysisView = z.infer<typeof analysisViewSchema>;
 
 /**
  * Tracks of a window of frames, for drawing. Points of track `i` are `start[i] .. start[i+1]-1`;
- * positions are px, flags those of tracking/types (16 = bridged).
+ * positions are px, flags those of tracking/types (16 = bridged, 32 = added and 64 = moved by a person).
  */
 export const trackWindowSchema = z.object({
   /** Of the tracks; a try-out has none. */
@@ -98,6 +110,8 @@ export const trackRowSchema = z.object({
   x_px: z.number(),
   y_px: z.number(),
   brightness: z.number(),
+  /** Corrections made it other than linking did. */
+  changed: z.boolean(),
 });
 export type TrackRowView = z.infer<typeof trackRowSchema>;
 

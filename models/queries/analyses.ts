@@ -3,7 +3,7 @@ import type { AnalysisStage, AnalysisSummary, ImageFacts, WorkState } from '@/li
 import { notFound } from '@/lib/errors';
 import type { analysisListQuery } from '@/lib/schemas/list-query';
 import type { AnalysisView } from '@/lib/views/analysis-view';
-import type { ListView, RehearsalMark } from '@/lib/views/common';
+import type { ListView, PersonView, RehearsalMark } from '@/lib/views/common';
 import type { Conditions, Recipe, RecipeRequest } from '@/tracking/types';
 import { listPage, type ListSource } from './list-page';
 import { iso, itemOf, personJson, type ItemRow, type Made } from './person';
@@ -30,6 +30,11 @@ interface Row extends ItemRow, Made {
   summary: AnalysisSummary | null;
   error_code: string | null;
   error_detail: string | null;
+  tracks_revision: number;
+  stale_since: Date | null;
+  signed_off_at: Date | null;
+  signed_off_by: PersonView | null;
+  content_hash: string | null;
   code_version: string;
   started_at: Date | null;
   finished_at: Date | null;
@@ -37,10 +42,11 @@ interface Row extends ItemRow, Made {
 
 const SELECT = `a.id, a.recording_id, g.name AS recording_name, g.run_id, r.campaign_id, a.state, a.stage,
   a.progress, a.frames, a.recipe, a.recipe_request, a.conditions, a.image_facts, a.summary, a.error_code,
-  a.error_detail, a.code_version, a.started_at, a.finished_at, a.revision, a.created_at, a.updated_at,
+  a.error_detail, a.code_version, a.tracks_revision, a.stale_since, a.signed_off_at, a.content_hash, a.started_at, a.finished_at, a.revision, a.created_at, a.updated_at,
   (SELECT p.name || ' ' || p.version FROM recipes p WHERE p.id = a.recipe_id) AS recipe_name,
   (SELECT count(*)::int FROM spot_chunks s WHERE s.analysis_id = a.id) AS chunks_done,
   ceil(a.frames::float8 / greatest(a.chunk_frames, 1))::int AS chunks_total,
+  (SELECT ${personJson('s')} FROM users s WHERE s.id = a.signed_off_by) AS signed_off_by,
   ${REHEARSAL_MARK} AS rehearsal, ${personJson('u')} AS created_by`;
 const FROM = `analyses a JOIN recordings g ON g.id = a.recording_id JOIN runs r ON r.id = g.run_id
   LEFT JOIN users u ON u.id = a.created_by`;
@@ -64,6 +70,13 @@ function viewOf(row: Row): AnalysisView {
     imageFacts: row.image_facts,
     summary: row.summary,
     error: row.error_code ? { code: row.error_code, detail: row.error_detail ?? '' } : null,
+    correctionsRevision: row.tracks_revision,
+    staleSince: iso(row.stale_since),
+    signedOff: row.signed_off_at && {
+      at: row.signed_off_at.toISOString(),
+      by: row.signed_off_by,
+      contentHash: row.content_hash ?? '',
+    },
     codeVersion: row.code_version,
     createdBy: row.created_by,
     startedAt: iso(row.started_at),

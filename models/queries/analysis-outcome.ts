@@ -55,7 +55,7 @@ export async function readOrder(labId: string, analysisId: string): Promise<Anal
   return rows[0] ?? null;
 }
 
-/** Stores what was measured of the flow, for one revision of the tracks. */
+/** Stores what was measured of the flow of the tracks as linked. */
 export async function saveMeasures(
   labId: string,
   analysisId: string,
@@ -64,23 +64,7 @@ export async function saveMeasures(
   transaction: Transaction,
 ): Promise<void> {
   const sequelize = getSequelize();
-  const populations = JSON.stringify({ ...measures.populations, pairs: measures.pairs });
-  await sequelize.query(
-    `INSERT INTO analysis_measures (analysis_id, tracks_revision, populations, pdfs, estimates, motion, details)
-     VALUES ($1, $2, $3, $4, $5, $6, $7)`,
-    {
-      bind: [
-        analysisId,
-        tracksRevision,
-        populations,
-        JSON.stringify(measures.pdfs),
-        JSON.stringify(measures.estimates),
-        JSON.stringify(measures.motion),
-        JSON.stringify(measures.details),
-      ],
-      transaction,
-    },
-  );
+  await saveMeasuresOf(analysisId, tracksRevision, measures, transaction);
   for (const [event, candidate] of measures.candidates.entries()) {
     const { trackA, trackB, t0S, pChance, qValue, accepted } = candidate;
     await sequelize.query(
@@ -104,6 +88,42 @@ export async function saveMeasures(
       },
     );
   }
+}
+
+/** Stores populations, distributions, estimates and motion for one revision of the tracks. */
+export async function saveMeasuresOf(
+  analysisId: string,
+  tracksRevision: number,
+  measures: FlowMeasures,
+  transaction: Transaction,
+): Promise<void> {
+  const populations = JSON.stringify({ ...measures.populations, pairs: measures.pairs });
+  await getSequelize().query(
+    `INSERT INTO analysis_measures (analysis_id, tracks_revision, populations, pdfs, estimates, motion, details)
+     VALUES ($1, $2, $3, $4, $5, $6, $7)`,
+    {
+      bind: [
+        analysisId,
+        tracksRevision,
+        populations,
+        JSON.stringify(measures.pdfs),
+        JSON.stringify(measures.estimates),
+        JSON.stringify(measures.motion),
+        JSON.stringify(measures.details),
+      ],
+      transaction,
+    },
+  );
+}
+
+/** Keeps counts and candidates of the tracks as linked beside their measures, before corrected ones take their place. */
+export async function keepRawResults(analysisId: string, transaction: Transaction): Promise<void> {
+  await getSequelize().query(
+    `UPDATE analysis_measures m SET summary = a.summary, candidates = coalesce(
+       (SELECT jsonb_agg(c.facts ORDER BY c.event) FROM candidates c WHERE c.analysis_id = a.id), '[]')
+     FROM analyses a WHERE a.id = $1 AND m.analysis_id = a.id AND m.tracks_revision = 0 AND m.candidates IS NULL`,
+    { bind: [analysisId], transaction },
+  );
 }
 
 /** The analysis is done. */
@@ -164,15 +184,36 @@ export async function readMeasures(
   return { ...rows[0], populations, pairs };
 }
 
-/** Rows of `reconnections.csv` in the order of their numbers, and what people settled of each. */
+/**
+ * Rows of `reconnections.csv` in the order of their numbers, and what people settled of each event.
+ * `raw`: rows of the tracks as linked, with what was settled of those that still are the same event.
+ */
 export async function readReconnections(
   labId: string,
   analysisId: string,
-): Promise<{ rows: ReconnectionRow[]; verdicts: VerdictText[] }> {
-  const rows = await getSequelize().query<{ facts: CandidateFacts; verdict: VerdictText | null }>(
-    `SELECT c.facts, o.verdict FROM candidates c JOIN candidate_outcomes o ON o.candidate_id = c.id
+  { raw = false }: { raw?: boolean } = {},
+): Promise<{ rows: ReconnectionRow[]; verdicts: Map<number, VerdictText> }> {
+  const rows = await getSequelize().query<{
+    facts: CandidateFacts;
+    event: number;
+    ended: boolean;
+    verdict: VerdictText | null;
+  }>(
+    `SELECT c.facts, c.event, c.ended_revision IS NOT NULL AS ended, o.verdict
+     FROM candidates c JOIN candidate_outcomes o ON o.candidate_id = c.id
      WHERE c.lab_id = $1 AND c.analysis_id = $2 ORDER BY c.event`,
     { bind: [labId, analysisId], type: QueryTypes.SELECT },
   );
-  return { rows: rows.map(({ facts }) => facts), verdicts: rows.map(({ verdict }) => verdict ?? '') };
+  const verdicts = new Map(rows.map(({ event, verdict }) => [event, verdict ?? '']));
+  if (raw) {
+    const kept = await getSequelize().query<{ candidates: CandidateFacts[] | null }>(
+      `SELECT m.candidates FROM analysis_measures m JOIN analyses a ON a.id = m.analysis_id
+       WHERE a.lab_id = $1 AND a.id = $2 AND m.tracks_revision = 0`,
+      { bind: [labId, analysisId], type: QueryTypes.SELECT },
+    );
+    // Numbers of events are never given anew, so an event of the raw list has its place as its number for good.
+    if (kept[0]?.candidates) return { rows: kept[0].candidates, verdicts };
+  }
+  const now = rows.filter(({ ended }) => !ended);
+  return { rows: now.map(({ facts, event }) => ({ ...facts, event })), verdicts };
 }

@@ -62,7 +62,11 @@ export async function planAnalyses(labId: string, ids: readonly string[]): Promi
       signedOff: signedOffAt ? { at: new Date(signedOffAt).toISOString(), by: signedOffBy } : null,
       measures: { populations, pdfs, estimates, motion },
       candidates: candidates.rows,
-      verdicts: candidates.verdicts,
+      // By number of the event, which need not be its place in the list.
+      verdicts: Array.from(
+        { length: Math.max(-1, ...candidates.verdicts.keys()) + 1 },
+        (_, event) => candidates.verdicts.get(event) ?? '',
+      ),
       judgements: await judgementsOf(labId, row.id),
       corrections: await correctionsOf(labId, row.id),
     });

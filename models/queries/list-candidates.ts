@@ -45,7 +45,7 @@ export async function listCandidates(
 ): Promise<ListView<CandidateView>> {
   await measuresOf(labId, analysisId);
   const bind: unknown[] = [labId, analysisId, sight.userId];
-  const where = ['c.lab_id = $1', 'c.analysis_id = $2'];
+  const where = ['c.lab_id = $1', 'c.analysis_id = $2', 'c.ended_revision IS NULL'];
   if (query.accepted) where.push(`c.accepted = $${bind.push(query.accepted === 'true')}`);
   const page = await listPage<CandidateRow>(
     {

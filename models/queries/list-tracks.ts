@@ -18,6 +18,7 @@ interface Row {
   mean_x_px: number;
   mean_y_px: number;
   mean_brightness: number;
+  changed: boolean;
 }
 
 const rounded = (value: number, digits: number): number => Number(value.toPrecision(digits));
@@ -49,7 +50,7 @@ export async function listTracks(
   const page = await listPage<Row>(
     {
       select: `t.number, t.first_frame, t.last_frame, t.points, t.bridged, t.population, t.p_trapped,
-        t.mean_speed_m_s, t.mean_x_px, t.mean_y_px, t.mean_brightness`,
+        t.mean_speed_m_s, t.mean_x_px, t.mean_y_px, t.mean_brightness, t.changed`,
       from: 'tracks t JOIN analyses a ON a.id = t.analysis_id',
       where,
       bind,
@@ -75,5 +76,6 @@ function viewOf(row: Row): TrackRowView {
     x_px: rounded(row.mean_x_px, 6),
     y_px: rounded(row.mean_y_px, 6),
     brightness: rounded(row.mean_brightness, 6),
+    changed: row.changed,
   };
 }

@@ -1,4 +1,4 @@
-import type { TableTrack } from '@/lib/tables/track-rows';
+import type { GivenStretch, TableTrack } from '@/lib/tables/track-rows';
 import type { Tracks } from '@/tracking/types';
 import { queryArrays, withRawClient } from '../raw-client';
 import { decodePoints, pointCount, type BlockPoints } from './point-blob';
@@ -6,8 +6,8 @@ import { currentTracksRevision, validRows } from './tracks-revision';
 
 /** Number of the track, block, its first frame, its points. */
 type PointsRow = [number, number, number, Buffer];
-/** Number of the track, its population, its probability of being trapped. */
-type PopulationRow = [number, number | null, number | null];
+/** Number of the track, its population, its probability of being trapped, what a person gave it. */
+type PopulationRow = [number, number | null, number | null, GivenStretch[] | null];
 
 interface Batch {
   points: PointsRow[];
@@ -77,7 +77,7 @@ function readBatch(
     if (points.length === 0) return { points, populations: new Map() };
     const rows = await queryArrays<PopulationRow>(
       client,
-      `SELECT t.number, t.population, t.p_trapped FROM tracks t
+      `SELECT t.number, t.population, t.p_trapped, t.given FROM tracks t
        WHERE t.analysis_id = $1 AND t.number BETWEEN $3 AND $4 AND ${validRows('t')}`,
       [analysisId, revision, points[0][0], points.at(-1)![0]],
     );
@@ -95,7 +95,7 @@ function trackOf(rows: readonly PointsRow[], populationRow: PopulationRow | unde
     decodePoints(row[3], 0, counts[i], points, at);
     at += counts[i];
   });
-  const [, population, pTrapped] = populationRow ?? [track, null, null];
+  const [, population, pTrapped, given] = populationRow ?? [track, null, null, null];
   return {
     track,
     frame: Uint32Array.from({ length: total }, (_, i) => firstFrame + i),
@@ -103,6 +103,7 @@ function trackOf(rows: readonly PointsRow[], populationRow: PopulationRow | unde
     population,
     // The text of a real is its shortest one; this is the very number that was stored.
     pTrapped: pTrapped === null ? Number.NaN : Math.fround(pTrapped),
+    ...(given ? { given } : {}),
   };
 }
 

@@ -1,3 +1,4 @@
+import type { GivenStretch } from '@/lib/tables/track-rows';
 import { queryArrays, withRawClient } from '../raw-client';
 import { blockOf, decodePositions, positionsSql, type BlockPositions } from './point-blob';
 import { currentTracksRevision, validRows } from './tracks-revision';
@@ -16,6 +17,10 @@ export interface TrackWindow {
   /** First and last frame of the whole track, which may lie outside the window. */
   firstFrame: Uint32Array;
   lastFrame: Uint32Array;
+  /** 1 where corrections made the track other than linking did. */
+  changed: Uint8Array;
+  /** Populations that a person gave to stretches, by number of the track. */
+  given: Map<number, GivenStretch[]>;
   /** Length count + 1. */
   start: Uint32Array;
   frame: Uint32Array;
@@ -61,21 +66,44 @@ export async function trackWindow(
     );
     const pieces = piecesOf(blocks, from, to);
     const numbers = Array.from(new Set(pieces.map(({ number }) => number)));
-    // Numbers follow first frames, so those of a window lie close together: a range, not a list of thousands.
-    const populations = await queryArrays<PopulationRow>(
-      client,
-      `SELECT t.number, t.population, t.p_trapped, t.first_frame, t.last_frame FROM tracks t
-       WHERE t.analysis_id = $1 AND t.number BETWEEN $3 AND $4 AND t.first_frame <= $5 AND t.last_frame >= $6
-         AND ${validRows('t')}`,
-      [...place, numbers[0] ?? 0, numbers.at(-1) ?? -1, to, from],
-    );
+    const populations: PopulationRow[] = [];
+    for (const [low, high] of twoRanges(numbers)) {
+      populations.push(
+        ...(await queryArrays<PopulationRow>(
+          client,
+          `SELECT t.number, t.population, t.p_trapped, t.given, t.changed,
+             t.first_frame, t.last_frame FROM tracks t
+           WHERE t.analysis_id = $1 AND t.number BETWEEN $3 AND $4 AND t.first_frame <= $5 AND t.last_frame >= $6
+             AND ${validRows('t')}`,
+          [...place, low, high, to, from],
+        )),
+      );
+    }
     return packWindow(revision ?? current, pieces, numbers, populations);
   });
 }
 
 /** Number of the track, frame of the first point of the block, its positions. */
 type BlockRow = [number, number, Buffer];
-type PopulationRow = [number, number | null, number | null, number, number];
+type PopulationRow = [number, number | null, number | null, GivenStretch[] | null, boolean, number, number];
+
+/**
+ * Numbers follow first frames, so those of a window lie close together, and those that corrections made lie
+ * together behind all others: two ranges, not a list of thousands.
+ */
+function twoRanges(numbers: readonly number[]): [number, number][] {
+  if (numbers.length === 0) return [];
+  let cut = 0;
+  for (let i = 1; i < numbers.length; i++) {
+    const gap = numbers[i] - numbers[i - 1];
+    if (cut === 0 || gap > numbers[cut] - numbers[cut - 1]) cut = i;
+  }
+  if (cut === 0) return [[numbers[0], numbers[0]]];
+  return [
+    [numbers[0], numbers[cut - 1]],
+    [numbers[cut], numbers[numbers.length - 1]],
+  ];
+}
 
 function piecesOf(blocks: readonly BlockRow[], from: number, to: number): Piece[] {
   const pieces: Piece[] = [];
@@ -104,6 +132,8 @@ function packWindow(
     pTrapped: new Float32Array(count).fill(Number.NaN),
     firstFrame: new Uint32Array(count),
     lastFrame: new Uint32Array(count),
+    changed: new Uint8Array(count),
+    given: new Map(),
     start: new Uint32Array(count + 1).fill(total),
     frame: new Uint32Array(total),
     xPx: new Float32Array(total),
@@ -111,13 +141,15 @@ function packWindow(
     flags: new Uint8Array(total),
   };
   const entryOf = new Map(numbers.map((number, entry) => [number, entry]));
-  for (const [number, population, pTrapped, firstFrame, lastFrame] of populations) {
+  for (const [number, population, pTrapped, given, changed, firstFrame, lastFrame] of populations) {
     const entry = entryOf.get(number);
     if (entry === undefined) continue;
     window.population[entry] = population ?? POPULATION_UNKNOWN;
     window.pTrapped[entry] = pTrapped ?? Number.NaN;
     window.firstFrame[entry] = firstFrame;
     window.lastFrame[entry] = lastFrame;
+    window.changed[entry] = changed ? 1 : 0;
+    if (given) window.given.set(number, given);
   }
   let at = 0;
   for (const { number, frame, skip, count: points, positions } of pieces) {

@@ -10,21 +10,27 @@ import { idBytes } from './id-bytes';
 const TRACK_COLUMNS = ['analysis_id', 'number', 'born_revision', 'first_frame', 'last_frame', 'points', 'bridged', 'mean_x_px', 'mean_y_px', 'mean_brightness', 'flags']; // prettier-ignore
 const POINT_COLUMNS = ['analysis_id', 'block', 'number', 'born_revision', 'first_frame', 'points'];
 
-/** Stores the tracks that linking made, as revision 0, by COPY. */
-export async function writeTracks(
+/** Stores the tracks that linking made, as revision 0. */
+export function writeTracks(analysisId: string, tracks: Tracks, transaction: Transaction): Promise<void> {
+  return writeTrackSlices(analysisId, Array.from(slices(tracks)), 0, transaction);
+}
+
+/** Stores tracks that are valid from a revision on, by COPY. */
+export async function writeTrackSlices(
   analysisId: string,
-  tracks: Tracks,
+  tracks: readonly TrackSlice[],
+  bornRevision: number,
   transaction: Transaction,
 ): Promise<void> {
   const id = idBytes(analysisId);
   await copyRows(
     'tracks',
     TRACK_COLUMNS,
-    slices(tracks),
+    tracks,
     (rows, slice) => {
       const mean = meansOf(slice);
       const last = slice.frame.length - 1;
-      rows.row(TRACK_COLUMNS.length).bytes(id).int4(slice.track).int4(0);
+      rows.row(TRACK_COLUMNS.length).bytes(id).int4(slice.track).int4(bornRevision);
       rows.int4(slice.frame[0]).int4(slice.frame[last]).int4(slice.frame.length).int4(mean.bridged);
       rows.real(mean.xPx).real(mean.yPx).real(mean.brightness).int2(mean.flags);
     },
@@ -36,7 +42,8 @@ export async function writeTracks(
     blocks(tracks),
     (rows, { slice, from, to }) => {
       const firstFrame = slice.frame[from];
-      rows.row(POINT_COLUMNS.length).bytes(id).int4(blockOf(firstFrame)).int4(slice.track).int4(0);
+      rows.row(POINT_COLUMNS.length).bytes(id).int4(blockOf(firstFrame)).int4(slice.track);
+      rows.int4(bornRevision);
       rows.int4(firstFrame).bytes(encodePoints(slice, from, to));
     },
     transaction,
@@ -47,8 +54,8 @@ function* slices(tracks: Tracks): Generator<TrackSlice> {
   for (let i = 0; i < tracks.count; i++) yield trackSlice(tracks, i);
 }
 
-function* blocks(tracks: Tracks): Generator<{ slice: TrackSlice; from: number; to: number }> {
-  for (const slice of slices(tracks)) {
+function* blocks(tracks: readonly TrackSlice[]): Generator<{ slice: TrackSlice; from: number; to: number }> {
+  for (const slice of tracks) {
     let from = 0;
     while (from < slice.frame.length) {
       const end = (blockOf(slice.frame[from]) + 1) * BLOCK_FRAMES - slice.frame[from];
@@ -59,21 +66,23 @@ function* blocks(tracks: Tracks): Generator<{ slice: TrackSlice; from: number; t
   }
 }
 
-// Bridged points are interpolated: they have no brightness and say nothing of their own.
+// Bridged points are interpolated: they have no brightness and say nothing of their own. Nor has a point set by eye.
 function meansOf({ xPx, yPx, brightness, flags }: TrackSlice) {
-  const sum = { x: 0, y: 0, brightness: 0, flags: 0, bridged: 0 };
+  const sum = { x: 0, y: 0, brightness: 0, bright: 0, flags: 0, bridged: 0 };
   for (let i = 0; i < flags.length; i++) {
     sum.x += xPx[i];
     sum.y += yPx[i];
     sum.flags |= flags[i];
     if (flags[i] & POINT_BRIDGED) sum.bridged++;
-    else sum.brightness += brightness[i];
+    else if (!Number.isNaN(brightness[i])) {
+      sum.brightness += brightness[i];
+      sum.bright++;
+    }
   }
-  const measured = flags.length - sum.bridged;
   return {
     xPx: sum.x / flags.length,
     yPx: sum.y / flags.length,
-    brightness: measured > 0 ? sum.brightness / measured : 0,
+    brightness: sum.bright > 0 ? sum.brightness / sum.bright : 0,
     flags: sum.flags,
     bridged: sum.bridged,
   };

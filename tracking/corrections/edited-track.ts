@@ -14,9 +14,28 @@ const FLOATS = ['xPx', 'yPx', 'sxPx', 'syPx', 'brightness'] as const;
 
 /** A track of the machine's: views of the same points, no population given. */
 export const asEdited = (slice: TrackSlice): EditedTrack => ({
-  ...slice,
+  track: slice.track,
+  frame: slice.frame,
+  xPx: slice.xPx,
+  yPx: slice.yPx,
+  sxPx: slice.sxPx,
+  syPx: slice.syPx,
+  brightness: slice.brightness,
+  flags: slice.flags,
   given: new Uint8Array(slice.frame.length).fill(NOT_GIVEN),
 });
+
+/** A track with populations given by a person: first frame, last frame, code. */
+export function withGiven(
+  slice: TrackSlice,
+  stretches: readonly (readonly [number, number, number])[],
+): EditedTrack {
+  const track = asEdited(slice);
+  for (const [from, to, code] of stretches) {
+    track.given.fill(code, from - firstFrame(slice), to - firstFrame(slice) + 1);
+  }
+  return track;
+}
 
 /** A track with room for frames `first` to `last`; every point is bridged and without position. */
 export function emptyTrack(track: number, first: number, last: number): EditedTrack {
@@ -90,4 +109,15 @@ export function bridge(track: EditedTrack, from: number, to: number): void {
     track.xPx[from + k] = (1 - share) * track.xPx[from] + share * track.xPx[to];
     track.yPx[from + k] = (1 - share) * track.yPx[from] + share * track.yPx[to];
   }
+}
+
+const bytesOf = (array: ArrayBufferView) => new Uint8Array(array.buffer, array.byteOffset, array.byteLength);
+
+/** Whether two tracks are the same to the bit. */
+export function sameTrack(one: EditedTrack, other: EditedTrack): boolean {
+  if (one.track !== other.track || one.frame.length !== other.frame.length) return false;
+  return (['frame', ...FLOATS, 'flags', 'given'] as const).every((name) => {
+    const [a, b] = [bytesOf(one[name]), bytesOf(other[name])];
+    return a.every((byte, i) => byte === b[i]);
+  });
 }

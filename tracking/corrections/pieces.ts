@@ -19,19 +19,13 @@ export function piecesOf(track: EditedTrack): TrackPiece[] {
     if (i < track.given.length && track.given[i] === track.given[from]) continue;
     const whole = from === 0 && i === track.given.length;
     const piece = whole ? track : cut(track, firstFrame(track) + from, firstFrame(track) + i - 1);
-    if (piece) pieces.push({ ...piece, population: track.given[from] });
+    if (piece) {
+      const { given, ...slice } = piece;
+      pieces.push({ ...slice, population: given[0] });
+    }
     from = i;
   }
   return pieces;
-}
-
-/** The population that a person gave to most of a track's points; `NOT_GIVEN` where to most none. */
-export function mostGiven(given: Uint8Array): number {
-  const counts = new Map<number, number>();
-  for (const code of given) counts.set(code, (counts.get(code) ?? 0) + 1);
-  let most = NOT_GIVEN;
-  for (const [code, count] of counts) if (count > (counts.get(most) ?? 0)) most = code;
-  return most;
 }
 
 /** Stretches of points with a population given by a person: `[first frame, last frame, code]`. */

@@ -59,8 +59,9 @@ export async function velocityPdfTable(request: TableRequest): Promise<Pieces> {
 
 export async function reconnectionsTable(request: TableRequest): Promise<Pieces> {
   await measuresFor(request);
-  const { rows, verdicts } = await readReconnections(request.labId, request.analysisId);
-  return reconnectionsCsv(rows, (event) => verdicts[event]);
+  const raw = request.corrections === 'none';
+  const { rows, verdicts } = await readReconnections(request.labId, request.analysisId, { raw });
+  return reconnectionsCsv(rows, (event) => verdicts.get(event) ?? '');
 }
 
 export async function estimatesTable(request: TableRequest): Promise<Pieces> {

@@ -9,6 +9,7 @@ export async function measureFlow(
   { onProgress }: WorkContext,
 ): Promise<FlowMeasures> {
   return measure(input.tracks, input.image, input.conditions, input.recipe, {
+    known: input.known,
     onProgress: (share) => onProgress(share),
   });
 }

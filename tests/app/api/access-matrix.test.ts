@@ -164,6 +164,9 @@ const BODIES: Partial<Record<RouteKey, unknown>> = {
   // An analysis of nobody: what is tested is who may ask.
   'POST /exports': { analyses: ['01890a5d-ac96-774b-bcce-b302099a8057'] },
   'POST /recipes': { name: 'Recipe', fields: {} },
+  'POST /analyses/{analysisId}/corrections': { kind: 'remove', track: 0 },
+  'POST /analyses/{analysisId}/corrections/restore': { revision: 0 },
+  'POST /analyses/{analysisId}/refine-point': { frame: 999_999, x_px: 0, y_px: 0 },
   'PATCH /people/{memberId}': { roles: ['analyst'] },
   'POST /rehearsals': { name: 'New', conditions: REHEARSAL_PLAN.conditions, scene: { lineDensity_m2: 1e7 } },
   'POST /people': { name: 'New', email: 'new@lab.test', roles: ['analyst'] },
@@ -191,7 +194,7 @@ function send(key: RouteKey, token: string | undefined) {
     headers['content-type'] = 'application/offset+octet-stream';
     headers['upload-offset'] = '5';
   }
-  const query = path.endsWith('/tracks') ? '?from=0&to=1' : '';
+  const query = path.endsWith('/tracks') ? '?from=0&to=1' : path.endsWith('/track-points') ? '?tracks=0' : '';
   return call(method, pathOf(key) + query, { token, headers, json: bodyOf(key) });
 }
 

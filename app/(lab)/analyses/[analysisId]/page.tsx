@@ -63,6 +63,7 @@ export default async function AnalysisPage({ params }: Props) {
                 : `It can be stopped by: ${whoMay('stop-analysis')}.`
             }
             judge={deskOf(viewer, analysis.id)}
+            signOffReason={may(viewer, 'sign-off') ? null : `It can be signed off by: ${whoMay('sign-off')}.`}
             downloadReason={
               may(viewer, 'download-tables') ? null : `Files can be had by: ${whoMay('download-tables')}.`
             }
