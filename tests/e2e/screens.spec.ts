@@ -41,7 +41,7 @@ const PAGES: Partial<Record<Role, string[]>> = {
     '/account',
     '/nowhere',
   ],
-  annotator: ['/review', '/lab/storage'],
+  annotator: ['/review', '/lab/storage', '/analyses/ANALYSIS/edit'],
   lab_administrator: [
     '/',
     '/lab',

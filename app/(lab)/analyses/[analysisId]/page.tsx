@@ -4,6 +4,7 @@ import { requireViewer } from '@/auth/page';
 import { may, mayTo, type Viewer } from '@/auth/viewer';
 import { AnalysisSheet } from '@/components/analyses/analysis-sheet';
 import { viewedRecording } from '@/components/canvas/viewed-recording';
+import { ButtonLink } from '@/components/ui/button';
 import { NoPermission } from '@/components/ui/page-states';
 import { PathThread } from '@/components/ui/path-thread';
 import { Sheet } from '@/components/ui/sheet';
@@ -50,6 +51,15 @@ export default async function AnalysisPage({ params }: Props) {
           recording,
           analysis: { id: analysis.id, name },
         })}
+        actions={
+          analysis.state === 'done' ? (
+            <ButtonLink href={`/analyses/${analysis.id}/edit`}>
+              {may(viewer, 'correct-tracks') && !analysis.signedOff
+                ? 'Correct tracks'
+                : 'Look at the tracks closely'}
+            </ButtonLink>
+          ) : null
+        }
       />
       <Sheet>
         {viewed ? (
