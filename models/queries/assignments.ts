@@ -30,7 +30,7 @@ interface Row extends ItemRow {
 const COUNTS = `(SELECT count(*)::int AS candidates,
     count(*) FILTER (WHERE EXISTS (SELECT FROM verdicts v WHERE v.candidate_id = c.id AND v.reader_id = s.reader_id))::int
       AS judged
-  FROM candidates c WHERE c.analysis_id = s.analysis_id AND ${inSetSql('s')})`;
+  FROM candidates c WHERE c.analysis_id = s.analysis_id AND c.ended_revision IS NULL AND ${inSetSql('s')})`;
 
 const SELECT = `s.id, s.revision, s.created_at, s.updated_at, s.analysis_id, g.name AS recording_name,
   r.name AS run_name, ${personJson('u')} AS reader, s.which, s.due_on::text AS due_on, s.note,
@@ -235,8 +235,9 @@ export async function allJudged(
   transaction: Transaction,
 ): Promise<boolean> {
   const row = await selectRow<{ open: number }>(
-    `SELECT count(*) FILTER (WHERE state = 'open')::int AS open FROM candidate_outcomes
-     WHERE lab_id = $1 AND analysis_id = $2`,
+    `SELECT count(*) FILTER (WHERE o.state = 'open')::int AS open
+     FROM candidate_outcomes o JOIN candidates c ON c.id = o.candidate_id
+     WHERE c.lab_id = $1 AND c.analysis_id = $2 AND c.ended_revision IS NULL`,
     [labId, analysisId],
     transaction,
   );

@@ -32,7 +32,7 @@ export async function stripSourceOf(labId: string, analysisId: string): Promise<
   );
   if (!row) return null;
   const candidates = await selectRows<{ id: string }>(
-    'SELECT id FROM candidates WHERE lab_id = $1 AND analysis_id = $2 ORDER BY event',
+    'SELECT id FROM candidates WHERE lab_id = $1 AND analysis_id = $2 AND ended_revision IS NULL ORDER BY event',
     [labId, analysisId],
   );
   return {

@@ -24,7 +24,13 @@ export async function listDisagreements(
   query: z.output<typeof disagreementListQuery>,
 ): Promise<ListView<DisagreementView>> {
   const bind: unknown[] = [labId];
-  const where = ['c.lab_id = $1', `o.state = 'disagreed'`, 'g.deleted_at IS NULL', `NOT (${signedOffSql})`];
+  const where = [
+    'c.lab_id = $1',
+    'c.ended_revision IS NULL',
+    `o.state = 'disagreed'`,
+    'g.deleted_at IS NULL',
+    `NOT (${signedOffSql})`,
+  ];
   if (query.analysis) where.push(`c.analysis_id = $${bind.push(query.analysis)}`);
   const page = await listPage<Row>(
     {
@@ -63,7 +69,7 @@ export async function takeUntoldDisagreements(
 ): Promise<{ id: string; event: number }[]> {
   const rows = await selectRows<{ id: string; event: number }>(
     `SELECT c.id, c.event FROM candidates c JOIN candidate_outcomes o ON o.candidate_id = c.id
-     WHERE c.lab_id = $1 AND c.analysis_id = $2 AND o.state = 'disagreed'
+     WHERE c.lab_id = $1 AND c.analysis_id = $2 AND c.ended_revision IS NULL AND o.state = 'disagreed'
        AND NOT EXISTS (SELECT FROM disagreement_notices n WHERE n.candidate_id = c.id)
      ORDER BY c.event`,
     [labId, analysisId],

@@ -43,7 +43,8 @@ export async function reviewQueue(labId: string, analysisId: string, sight: Sigh
   const rows = await selectRows<Row & { waits: boolean }>(
     `SELECT c.id, c.event, c.accepted, c.q_value, jsonb_array_length(c.facts->'failed') AS failed,
        ${OUTCOME_COLUMNS}, ${assignedSql('$3')} AS assigned, ${waitsSql('$3')} AS waits
-     FROM candidates c ${outcomeJoins('$3')} WHERE c.lab_id = $1 AND c.analysis_id = $2`,
+     FROM candidates c ${outcomeJoins('$3')}
+     WHERE c.lab_id = $1 AND c.analysis_id = $2 AND c.ended_revision IS NULL`,
     [labId, analysisId, sight.userId],
   );
   const order = reviewOrder(analysis.rate ?? RECIPE_DEFAULTS.falseDiscoveryRate);

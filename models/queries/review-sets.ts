@@ -33,7 +33,7 @@ const counts = (reader: string) => `(SELECT count(*)::int AS candidates,
     count(*) FILTER (WHERE o.state <> 'open')::int AS judged,
     count(*) FILTER (WHERE o.state = 'disagreed')::int AS disagreed,
     count(*) FILTER (WHERE o.verdict = 'yes')::int AS events
-  FROM candidates c ${outcomeJoins(reader)} WHERE c.analysis_id = a.id)`;
+  FROM candidates c ${outcomeJoins(reader)} WHERE c.analysis_id = a.id AND c.ended_revision IS NULL)`;
 
 /** Analyses with candidates and how far they are judged. */
 export async function listReviewSets(
@@ -103,7 +103,7 @@ export async function reviewCounts(
      FROM candidates c JOIN analyses a ON a.id = c.analysis_id AND a.state = 'done'
        JOIN recordings g ON g.id = a.recording_id AND g.deleted_at IS NULL
        JOIN runs r ON r.id = g.run_id AND r.deleted_at IS NULL ${outcomeJoins('$2')}
-     WHERE c.lab_id = $1 AND ${TAKEN} AND NOT (${signedOffSql})`,
+     WHERE c.lab_id = $1 AND c.ended_revision IS NULL AND ${TAKEN} AND NOT (${signedOffSql})`,
     [labId, userId],
   );
   return row!;
