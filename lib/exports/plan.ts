@@ -52,7 +52,8 @@ export interface PlannedAnalysis {
   createdBy: string | null;
   startedAt: string | null;
   finishedAt: string | null;
-  signedOff: { at: string; by: string | null } | null;
+  /** The hash is the SHA-256 of all that was signed off, hex. */
+  signedOff: { at: string; by: string | null; contentHash: string } | null;
   measures: {
     populations: PopulationSummary;
     pdfs: VelocityPdf[];

@@ -101,6 +101,13 @@ function fileEntity({ path, bytes, sha256, title, table }: PackedFile): Entity {
   };
 }
 
+function signOffText(signedOff: PlannedAnalysis['signedOff']): string {
+  if (!signedOff) return 'Not signed off: later versions may differ.';
+  const { at, by, contentHash } = signedOff;
+  const who = by ? ` by ${by}` : '';
+  return `Signed off on ${at.slice(0, 10)}${who}. SHA-256 of what was signed off: ${contentHash}.`;
+}
+
 function folderEntity(analysis: PlannedAnalysis, files: readonly PackedFile[]): Entity {
   const { campaign, run, recording } = analysis;
   const parts = files.filter(({ analysisId }) => analysisId === analysis.id);
@@ -108,9 +115,7 @@ function folderEntity(analysis: PlannedAnalysis, files: readonly PackedFile[]): 
     '@id': folderId(analysis),
     '@type': 'Dataset',
     name: `${campaign.name}, ${run.name}, ${recording.name}`,
-    description: analysis.signedOff
-      ? `Signed off on ${analysis.signedOff.at.slice(0, 10)}${analysis.signedOff.by ? ` by ${analysis.signedOff.by}` : ''}.`
-      : 'Not signed off: later versions may differ.',
+    description: signOffText(analysis.signedOff),
     hasPart: parts.map(({ path }) => ref(path)),
   };
 }

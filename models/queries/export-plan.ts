@@ -24,8 +24,9 @@ interface Row extends Omit<
   recording: PlannedAnalysis['recording'];
   startedAt: Date | null;
   finishedAt: Date | null;
-  signedOffAt: string | null;
+  signedOffAt: Date | null;
   signedOffBy: string | null;
+  contentHash: string | null;
 }
 
 /**
@@ -41,8 +42,8 @@ export async function planAnalyses(labId: string, ids: readonly string[]): Promi
        json_build_object('id', g.id, 'name', g.name, 'sha256', g.sha256, 'bytes', g.bytes, 'frames', a.frames,
          'width', g.width, 'height', g.height) AS recording,
        (SELECT p.name || ' ' || p.version FROM recipes p WHERE p.id = a.recipe_id) AS "recipeName",
-       u.name AS "createdBy", to_jsonb(a)->>'signed_off_at' AS "signedOffAt",
-       (SELECT s.name FROM users s WHERE s.id::text = to_jsonb(a)->>'signed_off_by') AS "signedOffBy"
+       u.name AS "createdBy", a.signed_off_at AS "signedOffAt", a.content_hash AS "contentHash",
+       (SELECT s.name FROM users s WHERE s.id = a.signed_off_by) AS "signedOffBy"
      FROM analyses a JOIN recordings g ON g.id = a.recording_id JOIN runs r ON r.id = g.run_id
        JOIN campaigns k ON k.id = r.campaign_id LEFT JOIN users u ON u.id = a.created_by
      WHERE a.lab_id = $1 AND a.id = ANY($2::uuid[]) ORDER BY a.id`,
@@ -50,7 +51,7 @@ export async function planAnalyses(labId: string, ids: readonly string[]): Promi
   );
   const planned: PlannedAnalysis[] = [];
   for (const [i, row] of rows.entries()) {
-    const { runStartedAt, signedOffAt, signedOffBy, ...kept } = row;
+    const { runStartedAt, signedOffAt, signedOffBy, contentHash, ...kept } = row;
     const { populations, pdfs, estimates, motion } = await measuresOf(labId, row.id, row.tracksRevision);
     const candidates = await readReconnections(labId, row.id);
     planned.push({
@@ -59,7 +60,11 @@ export async function planAnalyses(labId: string, ids: readonly string[]): Promi
       run: { ...row.run, startedAt: runStartedAt?.toISOString() ?? null },
       startedAt: row.startedAt?.toISOString() ?? null,
       finishedAt: row.finishedAt?.toISOString() ?? null,
-      signedOff: signedOffAt ? { at: new Date(signedOffAt).toISOString(), by: signedOffBy } : null,
+      signedOff: signedOffAt && {
+        at: signedOffAt.toISOString(),
+        by: signedOffBy,
+        contentHash: contentHash ?? '',
+      },
       measures: { populations, pdfs, estimates, motion },
       candidates: candidates.rows,
       // By number of the event, which need not be its place in the list.
@@ -90,7 +95,11 @@ async function judgementsOf(labId: string, analysisId: string): Promise<Judgemen
 }
 
 async function correctionsOf(labId: string, analysisId: string): Promise<CorrectionStep[]> {
-  void labId;
-  void analysisId;
-  return [];
+  const rows = await selectRows<Omit<CorrectionStep, 'at'> & { at: Date }>(
+    `SELECT c.seq AS revision, c.kind, c.fields AS detail, u.name AS by, c.created_at AS at
+     FROM corrections c JOIN users u ON u.id = c.created_by
+     WHERE c.lab_id = $1 AND c.analysis_id = $2 ORDER BY c.seq`,
+    [labId, analysisId],
+  );
+  return rows.map((row) => ({ ...row, at: row.at.toISOString() }));
 }

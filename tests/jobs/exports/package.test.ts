@@ -13,6 +13,7 @@ import { exportFolder } from '@/jobs/exports/export-folder';
 import { ESTIMATES, TRACKS, VELOCITIES } from '@/lib/exports/table-definitions';
 import { models } from '@/models';
 import { getSequelize } from '@/models/database';
+import { execute } from '@/models/queries/select';
 import { POINT_BRIDGED, POPULATIONS } from '@/tracking/types';
 import { trackVelocities } from '@/tracking/velocities';
 import { trackSlice } from '@/tracking/track-slice';
@@ -67,6 +68,8 @@ beforeAll(async () => {
   process.env.BEADLINE_DATA = mkdtempSync(join(root, 'exports-'));
   lab = await makeLab();
   analysisId = (await measuredAnalysis(lab, { run: '=1+1', recording: 'stack ä.tif' })).id;
+  await logCorrection(1, 'remove', { track: 0 });
+  await logCorrection(2, 'undo', { of: '00000000-0000-7000-8000-000000000001' });
   ({ path } = await buildPackageOf(lab, { ...wish(), formats: ['csv', 'hdf5', 'parquet', 'npz'] }));
   folder = mkdtempSync(join(root, 'package-'));
   const python = process.env.TEST_PYTHON ?? '/usr/bin/python3';
@@ -76,6 +79,14 @@ beforeAll(async () => {
 });
 afterAll(({}, suite) => db.dropIfGreen({}, suite));
 afterAll(closeDoorbell);
+
+/** A line of the log of corrections, as the API would append it. */
+const logCorrection = (seq: number, kind: string, fields: Record<string, unknown>) =>
+  execute(
+    `INSERT INTO corrections (id, lab_id, analysis_id, seq, kind, fields, created_by, created_at)
+     VALUES ($1, $2, $3, $4, $5, $6, $7, '2026-03-04T05:06:07Z')`,
+    [`00000000-0000-7000-8000-00000000000${seq}`, lab.labId, analysisId, seq, kind, JSON.stringify(fields), lab.userId], // prettier-ignore
+  );
 
 const text = (name: string) => readFileSync(join(folder, name), 'utf8');
 const json = <T>(name: string) => JSON.parse(text(name)) as T;
@@ -202,6 +213,15 @@ describe('its descriptions', () => {
     });
     expect((action.result as unknown[]).map(idOf)).toContain('analysis-001/tracks.csv');
     expect(entity('https://orcid.org/0000-0002-1825-0097')).toMatchObject({ '@type': 'Person' });
+  });
+
+  it('holds every correction, those taken back too, with who made it and when', () => {
+    const name = 'Test Person';
+    expect(text('analysis-001/corrections.csv').trim().split('\r\n')).toEqual([
+      'revision,kind,detail,by,at',
+      `1,remove,"{""track"":0}",${name},2026-03-04T05:06:07.000Z`,
+      `2,undo,"{""of"":""00000000-0000-7000-8000-000000000001""}",${name},2026-03-04T05:06:07.000Z`,
+    ]);
   });
 
   it('a cell that a spreadsheet would compute is made harmless', () => {
