@@ -106,7 +106,7 @@ export function ExportSheet({ analyses, contributors, viewer, chosen: first, cam
           onChoose={setChosen}
           firstCampaignId={campaignId}
         />
-        <fieldset className="min-w-0 pt-4">
+        <fieldset className="min-w-0 mt-4">
           <legend className="text-small text-ink-2">Formats of the tables</legend>
           <div className="grid grid-cols-1 gap-x-6 gap-y-2 pt-1 hand:grid-cols-2 desk:grid-cols-5">
             {EXPORT_FORMATS.map((format) => (

@@ -252,6 +252,13 @@ function Sitting({ queue, ...props }: ReviewDeskProps & { queue: ReviewQueueView
                   <Button keyCap={keys.later.toUpperCase()} onClick={() => move(way.postpone(sitting))}>
                     Later
                   </Button>
+                  {loaded ? (
+                    <ButtonLink
+                      href={`/analyses/${props.analysisId}/edit?frame=${loaded.detail.film.middleFrame}&track=${loaded.detail.trackA}`}
+                    >
+                      Correct the tracks
+                    </ButtonLink>
+                  ) : null}
                 </div>
                 <p className="pt-3 text-small text-ink-3">
                   Order: {queue.order} <a href="/account#review-keys">Change the keys</a>
