@@ -1,6 +1,6 @@
 import { chooseKernels } from '@/jobs/compute/kernels';
 import { plainKernels } from '@/tracking/kernels/plain-kernels';
-import { startCore } from './core-process';
+import { startCore, type CoreProcess } from './core-process';
 import { medianRun, type PipelineRun } from './pipeline-run';
 import type { BenchRecording } from './recording';
 import { runReference } from './reference-run';
@@ -57,9 +57,9 @@ export async function comparePipelines(
     for (let round = 0; plain && round < PLAIN_WARM_ROUNDS; round++) await plain.round();
     for (let round = 1; round <= rounds; round++) {
       note(`Round ${round} of ${rounds}`);
-      keep('full', await full.round());
-      keep('quick', await quick.round());
-      if (plain) keep('plain', await plain.round());
+      keep('full', await warmRound(full));
+      keep('quick', await warmRound(quick));
+      if (plain) keep('plain', await warmRound(plain));
       if (!python) continue;
       keep('plain script', await runReference(python, 'plain', recording, folder));
       keep('tuned script', await runReference(python, 'tuned', recording, folder));
@@ -80,6 +80,12 @@ export async function comparePipelines(
   } finally {
     for (const core of [full, quick, plain]) await core?.close();
   }
+}
+
+/** A process that waited for its turn has to find its way back into the caches first. */
+async function warmRound(core: CoreProcess): Promise<PipelineRun> {
+  await core.round();
+  return core.round();
 }
 
 /** All pipelines of a comparison, the scripts first. */
