@@ -2,11 +2,8 @@ import type { Transaction } from 'sequelize';
 import { LabError } from '@/lib/errors';
 import { selectRow } from './select';
 
-// Read by name, so that it holds whether or not the column is there yet.
-const SIGNED = `(to_jsonb(a)->>'signed_off_at') IS NOT NULL`;
-
 /** SQL: whether the analysis `a` was signed off. */
-export const signedOffSql = SIGNED;
+export const signedOffSql = 'a.signed_off_at IS NOT NULL';
 
 /**
  * An analysis that was signed off stays as it is: its verdicts with it. Its row is held, so that nobody signs off
@@ -19,7 +16,7 @@ export async function assertNotSigned(
   transaction: Transaction,
 ): Promise<void> {
   const row = await selectRow<{ signed: boolean }>(
-    `SELECT ${SIGNED} AS signed FROM analyses a WHERE a.lab_id = $1 AND a.id = $2 FOR SHARE`,
+    `SELECT ${signedOffSql} AS signed FROM analyses a WHERE a.lab_id = $1 AND a.id = $2 FOR SHARE`,
     [labId, analysisId],
     transaction,
   );
