@@ -1,4 +1,5 @@
 import {
+  carryCorrectionsSchema,
   correctionsBodySchema,
   presencePostSchema,
   refinePointSchema,
@@ -31,6 +32,13 @@ export const CORRECTION_ROUTES = {
     body: restoreRevisionSchema,
     answer: views.correctionsStoredSchema,
     status: 201,
+    ifMatch: true,
+  },
+  'POST /analyses/{analysisId}/corrections/carry': {
+    action: 'correct-tracks',
+    summary: 'Carry the corrections of another analysis of the same recording here, as far as they can be',
+    body: carryCorrectionsSchema,
+    answer: views.carryReportSchema,
     ifMatch: true,
   },
   'GET /analyses/{analysisId}/track-points': {

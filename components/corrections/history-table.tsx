@@ -98,6 +98,11 @@ export function HistoryTable({ analysisId, reason }: HistoryTableProps) {
                           item,
                           items.find(({ id }) => id === item.of),
                         )}
+                        {item.carriedFrom ? (
+                          <span className="block text-small text-ink-3">
+                            carried from another analysis of this recording
+                          </span>
+                        ) : null}
                         {item.inForce ? null : (
                           <span className="block text-small text-ink-3">taken back since</span>
                         )}

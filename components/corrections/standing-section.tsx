@@ -12,6 +12,7 @@ import { StaleLine } from '@/components/ui/page-states';
 import { Facts, Section } from '@/components/ui/sheet';
 import { formatCount } from '@/lib/format/count';
 import type { AnalysisView } from '@/lib/views/analysis-view';
+import { useOtherCorrected } from './use-other-corrected';
 
 interface StandingSectionProps {
   analysis: AnalysisView;
@@ -47,6 +48,9 @@ export function StandingSection({ analysis, signOffReason }: StandingSectionProp
         ? 'It can be signed off once the new results are there.'
         : null;
   const history = `/analyses/${analysis.id}/history`;
+  // Only where nothing was corrected yet is it likely that somebody looks for what they did before.
+  const others = useOtherCorrected(analysis, correctionsRevision === 0 && !signedOff);
+  const elsewhere = others.data?.[0];
   return (
     <Section title="Corrections and sign-off">
       {staleSince ? (
@@ -83,6 +87,14 @@ export function StandingSection({ analysis, signOffReason }: StandingSectionProp
           },
         ]}
       />
+      {elsewhere && correctionsRevision === 0 && !signedOff ? (
+        <p className="pt-2 text-note">
+          Another analysis of this recording, of <Moment at={elsewhere.createdAt} />, has{' '}
+          {formatCount(elsewhere.correctionsRevision)}{' '}
+          {elsewhere.correctionsRevision === 1 ? 'correction' : 'corrections'}.{' '}
+          <Link href={`${history}#carry`}>See what can be carried here</Link>
+        </p>
+      ) : null}
       {signedOff ? null : (
         <div className="pt-2">
           <Button reason={signOffReason ?? notYet} onClick={() => setAsking(true)}>

@@ -58,12 +58,15 @@ interface ConfirmDialogProps {
   keep: string;
   /** The act in words: "Stop it". */
   act: string;
+  /** False where there is nothing to do after all: only the safe choice is offered. */
+  actable?: boolean;
   /** Resolves when done; a thrown error is said in the dialog, which stays open. */
   onAct: () => Promise<void> | void;
 }
 
 /** Asks before something that can't be taken back. Danger isn't red: the words say what stays. */
-export function ConfirmDialog({ open, onClose, question, children, keep, act, onAct }: ConfirmDialogProps) {
+export function ConfirmDialog(props: ConfirmDialogProps) {
+  const { open, onClose, question, children, keep, act, actable = true, onAct } = props;
   const [busy, setBusy] = useState(false);
   const [problem, setProblem] = useState<string | null>(null);
   const close = () => {
@@ -92,9 +95,11 @@ export function ConfirmDialog({ open, onClose, question, children, keep, act, on
           <Button onClick={close} autoFocus>
             {keep}
           </Button>
-          <Button kind="main" busy={busy} onClick={run}>
-            {act}
-          </Button>
+          {actable ? (
+            <Button kind="main" busy={busy} onClick={run}>
+              {act}
+            </Button>
+          ) : null}
         </>
       }
     >

@@ -22,6 +22,8 @@ export const correctionViewSchema = z.object({
   brightness: optional(z.number()),
   population: optional(z.enum(['trapped', 'free', 'undecided'])),
   of: optional(z.uuid()),
+  /** The correction of another analysis that was carried here. */
+  carriedFrom: optional(z.uuid()),
   gesture: z.uuid().nullable(),
   /** Number of the track that it made. */
   madeTrack: count.nullable(),
@@ -75,7 +77,12 @@ export type PresenceView = z.infer<typeof presenceSchema>;
 export const carryReportSchema = z.object({
   revision: count,
   nextTrack: count,
+  /** Corrections that were made here, or would be. */
   carried: count,
+  /** Those with nothing to do: the tracks here are so already. */
+  already: count,
+  /** Corrections at the beginning of that log that were dealt with when it was carried before. */
+  before: count,
   /** True where nothing was stored: only asked what would become. */
   preview: z.boolean(),
   left: z.array(z.object({ correction: correctionViewSchema, words: z.string(), reason: z.string() })),

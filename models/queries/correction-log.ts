@@ -71,3 +71,18 @@ export async function gesturesUsed(
   );
   return new Set(rows.map(({ gesture }) => gesture));
 }
+
+/** Corrections of other analyses that were carried to this one. */
+export async function carriedBefore(
+  labId: string,
+  analysisId: string,
+  transaction: Transaction,
+): Promise<Set<string>> {
+  const rows = await selectRows<{ id: string }>(
+    `SELECT DISTINCT fields->>'carriedFrom' AS id FROM corrections
+     WHERE lab_id = $1 AND analysis_id = $2 AND fields ? 'carriedFrom'`,
+    [labId, analysisId],
+    transaction,
+  );
+  return new Set(rows.map(({ id }) => id));
+}

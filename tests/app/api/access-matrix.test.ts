@@ -166,6 +166,7 @@ const BODIES: Partial<Record<RouteKey, unknown>> = {
   'POST /recipes': { name: 'Recipe', fields: {} },
   'POST /analyses/{analysisId}/corrections': { kind: 'remove', track: 0 },
   'POST /analyses/{analysisId}/corrections/restore': { revision: 0 },
+  'POST /analyses/{analysisId}/corrections/carry': { from: newId(), preview: true },
   'POST /analyses/{analysisId}/refine-point': { frame: 999_999, x_px: 0, y_px: 0 },
   'PATCH /people/{memberId}': { roles: ['analyst'] },
   'POST /rehearsals': { name: 'New', conditions: REHEARSAL_PLAN.conditions, scene: { lineDensity_m2: 1e7 } },
