@@ -2,11 +2,13 @@ import { fitBackground } from './image-model/background-nodes';
 import { findBadPixels } from './image-model/bad-pixels';
 import { interpolateBlocks } from './image-model/block-grid';
 import { blockStatistics } from './image-model/block-statistics';
-import { electronFrames } from './image-model/electron-frames';
 import { measureCameraNoise } from './image-model/photon-transfer';
 import { findQuietPixels } from './image-model/quiet-pixels';
 import { findSaturation } from './image-model/saturation';
+import { spotFrames } from './image-model/spot-frames';
 import { measureSpotSize } from './image-model/spot-size';
+import type { Kernels } from './kernels/kernels';
+import { plainKernels } from './kernels/plain-kernels';
 import type { Frame, ImageModel, RecipeRequest } from './types';
 
 /**
@@ -53,24 +55,26 @@ export function pickModelFrames(
  * @param frames those of `pickModelFrames`, in that order.
  * @param frameNumbers what `pickModelFrames` returned; without them a drift of the background can't
  *   be placed in time and its mean has to do.
+ * @param kernels what goes over all pixels: plain or compiled
  * @throws RangeError for no frames or frames of different sizes.
  */
 export function measureImage(
   frames: readonly Frame[],
   request: RecipeRequest,
   frameNumbers: readonly number[] | null = null,
+  kernels: Kernels = plainKernels,
 ): ImageModel {
   checkFrames(frames, frameNumbers);
   const { width, height } = frames[0];
-  const quietPixels = findQuietPixels(frames);
+  const quietPixels = findQuietPixels(frames, kernels.forPairs(width, height));
   const statistics = blockStatistics(quietPixels);
   const camera = measureCameraNoise(quietPixels, statistics, request);
   const { meanE, drift } = fitBackground(statistics, camera, frameNumbers && pairNumbers(frameNumbers));
   const backgroundE = interpolateBlocks(meanE, statistics.grid);
   for (let i = 0; i < backgroundE.length; i++) if (backgroundE[i] < 0) backgroundE[i] = 0;
   const { sums, level } = quietPixels;
-  const pixelVariances = pixelVariance(backgroundE, camera);
-  const badPixels = findBadPixels(sums, pixelVariances, statistics.pairs, frames.length, width, height);
+  const varianceAt = pixelVariance(backgroundE, camera);
+  const badPixels = findBadPixels(sums, varianceAt, statistics.pairs, frames.length, width, height);
   const middle = (height >> 1) * width + (width >> 1);
   const model: ImageModel = {
     width,
@@ -82,14 +86,13 @@ export function measureImage(
       sums.highest,
       sums.highestPixels,
       level[middle],
-      pixelVariances[middle],
+      varianceAt(middle),
     ),
     badPixels,
     backgroundE,
     backgroundDrift: drift,
   };
-  const spots = electronFrames(frames, frameNumbers, model);
-  const size = measureSpotSize(spots, width, height, camera.readNoiseE ** 2);
+  const size = measureSpotSize(spotFrames(frames, frameNumbers, model, kernels));
   model.spotSigmaPx = typeof request.spotSizePx === 'number' ? request.spotSizePx : size.sigmaPx;
   model.spotSigmaSpreadPx = size.spreadPx;
   return model;
@@ -122,11 +125,7 @@ function pairNumbers(frameNumbers: readonly number[]): Float64Array {
 function pixelVariance(
   backgroundE: Float32Array,
   { gainCountsPerE, readNoiseE }: Pick<ImageModel, 'gainCountsPerE' | 'readNoiseE'>,
-): Float32Array {
+): (pixel: number) => number {
   const square = gainCountsPerE * gainCountsPerE;
-  const variance = new Float32Array(backgroundE.length);
-  for (let i = 0; i < variance.length; i++) {
-    variance[i] = square * (backgroundE[i] + readNoiseE * readNoiseE) + 1e-12;
-  }
-  return variance;
+  return (pixel) => square * (backgroundE[pixel] + readNoiseE * readNoiseE) + 1e-12;
 }

@@ -30,7 +30,7 @@ export async function runCore(
   for (const f of numbers) picked.push(await stack.readFrame(f));
   let model!: ImageModel;
   const measuring = await cpuSeconds(() => {
-    model = measureImage(picked, { effort }, numbers);
+    model = measureImage(picked, { effort }, numbers, kernels);
   });
   const recipe = resolveRecipe({ effort }, { ...model, frames, pixelSizeM: PIXEL_SIZE_M });
   const search = await searchSeconds(kernels, model, recipe, picked);

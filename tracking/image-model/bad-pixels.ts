@@ -27,11 +27,11 @@ const STUCK_BY_CHANCE = 1e-10;
  * look as usual.
  *
  * @param sums of what pixels are above the background, over `pairs` pairs of altogether `frames` frames.
- * @param variance expected variance of one frame by pixel, counts^2.
+ * @param varianceAt expected variance of a pixel of one frame, counts^2.
  */
 export function findBadPixels(
   { sum, squares }: Pick<ScanSums, 'sum' | 'squares'>,
-  variance: Float32Array,
+  varianceAt: (pixel: number) => number,
   pairs: number,
   frames: number,
   width: number,
@@ -44,7 +44,7 @@ export function findBadPixels(
   const stuckShare = frames < STUCK_FRAMES_LEAST ? 0 : shareByChance(frames);
   let count = 0;
   for (let i = 0; i < pixels; i++) {
-    const expected = variance[i];
+    const expected = varianceAt(i);
     const off = sum[i] / pairs;
     const meanSquare = squares[i] / pairs;
     const stuck = meanSquare - off * off < stuckShare * expected;

@@ -1,4 +1,5 @@
 import { blockStart, type BlockGrid } from './block-grid';
+import { BLOCK_SUMS, BlockSum } from './block-sums';
 import type { QuietPixels } from './quiet-pixels';
 
 /**
@@ -20,7 +21,14 @@ export interface BlockStatistics {
 }
 
 /** Goes through all pairs once. */
-export function blockStatistics({ grid, bins, pairs, quiet, level }: QuietPixels): BlockStatistics {
+export function blockStatistics({
+  grid,
+  pairs,
+  shifts,
+  quiet,
+  level,
+  kernels,
+}: QuietPixels): BlockStatistics {
   const blocks = grid.columns * grid.rows;
   const table = () => new Float64Array(pairs.length * blocks);
   const out: BlockStatistics = {
@@ -33,24 +41,35 @@ export function blockStatistics({ grid, bins, pairs, quiet, level }: QuietPixels
     thirdCount: table(),
   };
   const levels = blockMeans(level, grid);
-  const sums = createPairSums(blocks);
-  pairs.forEach(({ first, second, alone }, p) => {
-    for (const values of Object.values(sums)) values.fill(0);
-    addPair(first.counts, second.counts, level, quiet[p], bins.columns, grid, sums);
+  const sums = new Float64Array(BLOCK_SUMS * blocks);
+  pairs.forEach((pair, p) => {
+    kernels.sumBlocks(pair, shifts[p], quiet[p], grid, sums);
+    const shift = 0.5 * (shifts[p][0] + shifts[p][1]);
     for (let b = 0; b < blocks; b++) {
-      const n = sums.pixels[b];
+      const from = b * BLOCK_SUMS;
+      const n = sums[from + BlockSum.pixels];
       if (n === 0) continue;
       const at = p * blocks + b;
-      const meanA = sums.sumA[b] / n;
-      const meanB = sums.sumB[b] / n;
+      const meanA = sums[from + BlockSum.sumA] / n;
+      const meanB = sums[from + BlockSum.sumB] / n;
       out.pixels[at] = n;
-      out.level[at] = levels[b] + 0.5 * (meanA + meanB);
-      out.noiseSum[at] = 0.5 * (sums.differences2[b] - n * (meanA - meanB) ** 2);
+      out.level[at] = levels[b] + shift + 0.5 * (meanA + meanB);
+      out.noiseSum[at] = 0.5 * (sums[from + BlockSum.differences2] - n * (meanA - meanB) ** 2);
       if (n < 3) continue;
-      out.thirdSum[at] = thirdAboutMean(n, meanA, sums.squaresA[b], sums.cubesA[b]);
+      out.thirdSum[at] = thirdAboutMean(
+        n,
+        meanA,
+        sums[from + BlockSum.squaresA],
+        sums[from + BlockSum.cubesA],
+      );
       out.thirdCount[at] = n;
-      if (alone) continue;
-      out.thirdSum[at] += thirdAboutMean(n, meanB, sums.squaresB[b], sums.cubesB[b]);
+      if (pair.alone) continue;
+      out.thirdSum[at] += thirdAboutMean(
+        n,
+        meanB,
+        sums[from + BlockSum.squaresB],
+        sums[from + BlockSum.cubesB],
+      );
       out.thirdCount[at] += n;
     }
   });
@@ -61,74 +80,6 @@ export function blockStatistics({ grid, bins, pairs, quiet, level }: QuietPixels
 function thirdAboutMean(n: number, mean: number, squares: number, cubes: number): number {
   const third = cubes - 3 * mean * squares + 2 * n * mean ** 3;
   return (third * n * n) / ((n - 1) * (n - 2));
-}
-
-/** By block: quiet pixels, sums of the powers of what they are above the level, of both frames, and of the differences. */
-type PairSums = ReturnType<typeof createPairSums>;
-
-function createPairSums(blocks: number) {
-  const table = () => new Float64Array(blocks);
-  return {
-    pixels: table(),
-    sumA: table(),
-    sumB: table(),
-    squaresA: table(),
-    squaresB: table(),
-    cubesA: table(),
-    cubesB: table(),
-    differences2: table(),
-  };
-}
-
-function addPair(
-  first: Float32Array,
-  second: Float32Array,
-  level: Float32Array,
-  quiet: Uint8Array,
-  binColumns: number,
-  { width, height, columns, rows }: BlockGrid,
-  sums: PairSums,
-): void {
-  for (let r = 0; r < rows; r++) {
-    const y1 = blockStart(r + 1, rows, height);
-    for (let y = blockStart(r, rows, height); y < y1; y++) {
-      const bin = (y >> 1) * binColumns;
-      for (let c = 0; c < columns; c++) {
-        let n = 0;
-        let sumA = 0;
-        let sumB = 0;
-        let squaresA = 0;
-        let squaresB = 0;
-        let cubesA = 0;
-        let cubesB = 0;
-        let differences2 = 0;
-        const end = blockStart(c + 1, columns, width);
-        for (let x = blockStart(c, columns, width); x < end; x++) {
-          if (quiet[bin + (x >> 1)] === 0) continue;
-          const at = y * width + x;
-          const a = first[at] - level[at];
-          const b = second[at] - level[at];
-          n++;
-          sumA += a;
-          sumB += b;
-          squaresA += a * a;
-          squaresB += b * b;
-          cubesA += a * a * a;
-          cubesB += b * b * b;
-          differences2 += (a - b) * (a - b);
-        }
-        const to = r * columns + c;
-        sums.pixels[to] += n;
-        sums.sumA[to] += sumA;
-        sums.sumB[to] += sumB;
-        sums.squaresA[to] += squaresA;
-        sums.squaresB[to] += squaresB;
-        sums.cubesA[to] += cubesA;
-        sums.cubesB[to] += cubesB;
-        sums.differences2[to] += differences2;
-      }
-    }
-  }
 }
 
 /** Mean of an image over each block. */

@@ -1,4 +1,4 @@
-import type { PeakList } from '../detection/matched-filter';
+import type { Peaks } from '../kernels/kernels';
 
 /**
  * Peaks of at least `clearResponse` with no other peak nearer than `apartPx`, farther than
@@ -7,7 +7,7 @@ import type { PeakList } from '../detection/matched-filter';
  * @param peaks in reading order.
  */
 export function lonePeaks(
-  peaks: PeakList,
+  peaks: Peaks,
   response: Float32Array,
   width: number,
   height: number,

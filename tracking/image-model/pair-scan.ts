@@ -18,7 +18,7 @@ export function binGrid(width: number, height: number): BinGrid {
 /** Mean of 4 x 4 pixels, in units of its noise, from which a tracer is suspected. */
 export const SUSPECT_LEVEL = 3.3;
 /** A tracer's light reaches farther than the 2 x 2 bins that give it away. */
-const SUSPECT_REACH_BINS = 2;
+export const SUSPECT_REACH_BINS = 2;
 
 /** What is gathered on the way through all pairs of frames. */
 export interface ScanSums {
@@ -31,6 +31,17 @@ export interface ScanSums {
   /** Highest count of any frame that is a number, and how many pixels have it. */
   highest: number;
   highestPixels: number;
+}
+
+export function scanSums({ width, height, columns, rows }: BinGrid): ScanSums {
+  return {
+    sum: new Float32Array(width * height),
+    squares: new Float32Array(width * height),
+    quietSum: new Float32Array(columns * rows),
+    quietPairs: new Uint8Array(columns * rows),
+    highest: -Infinity,
+    highestPixels: 0,
+  };
 }
 
 /** Goes through a pair of frames once; keeps its rows from pair to pair. */

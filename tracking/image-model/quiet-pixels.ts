@@ -8,15 +8,9 @@ import {
 } from './block-grid';
 import { framePairs, type FramePair } from './frame-pairs';
 import { nthElement } from './nth-element';
-import {
-  binGrid,
-  createPairScanner,
-  markSuspects,
-  SUSPECT_LEVEL,
-  type BinGrid,
-  type ScanSums,
-} from './pair-scan';
+import { binGrid, markSuspects, SUSPECT_LEVEL, type BinGrid, type ScanSums } from './pair-scan';
 import { roughLevel } from './rough-level';
+import type { PairKernels, PairShifts } from '../kernels/pair-kernels';
 import type { Frame } from '../types';
 
 /** Pixels from which a frame's brightness as a whole is told. */
@@ -27,6 +21,8 @@ export interface QuietPixels {
   grid: BlockGrid;
   bins: BinGrid;
   pairs: FramePair[];
+  /** Per pair: by how much its frames are brighter than the level as a whole, counts. */
+  shifts: PairShifts[];
   /** Per pair of frames and bin: 1 where neither frame shows a tracer. */
   quiet: Uint8Array[];
   /** Mean background of the recording by pixel, counts. */
@@ -35,6 +31,8 @@ export interface QuietPixels {
   roughLevel: Float64Array;
   roughNoise: Float64Array;
   sums: ScanSums;
+  /** What goes over all pixels; its level is the one above. */
+  kernels: PairKernels;
 }
 
 /**
@@ -43,52 +41,45 @@ export interface QuietPixels {
  * recording, bins around groups that stand out of that, as faint tracers do which never move, are
  * set aside in all frames.
  */
-export function findQuietPixels(frames: readonly Frame[]): QuietPixels {
+export function findQuietPixels(frames: readonly Frame[], kernels: PairKernels): QuietPixels {
   const { width, height } = frames[0];
-  const pixels = width * height;
   const grid = blockGrid(width, height);
   const bins = binGrid(width, height);
   const pairs = framePairs(frames);
   const rough = roughLevel(pairs);
-  const suspect = suspectSums(rough.noise, rough.grid, bins);
-  const sums: ScanSums = {
-    sum: new Float32Array(pixels),
-    squares: new Float32Array(pixels),
-    quietSum: new Float32Array(bins.columns * bins.rows),
-    quietPairs: new Uint8Array(bins.columns * bins.rows),
-    highest: -Infinity,
-    highestPixels: 0,
-  };
-  const scanner = createPairScanner(bins);
-  const level = new Float32Array(pixels);
+  const { level, suspect, sums } = kernels;
+  paintSuspectSums(rough.noise, rough.grid, bins, suspect);
   const meanLevel = new Float64Array(rough.noise.length);
+  const shifts: PairShifts[] = [];
   const quiet = pairs.map((pair, p) => {
-    paintBlocks(rough.levels[p], rough.grid, level);
+    kernels.paintLevel(rough.levels[p], rough.grid);
     rough.levels[p].forEach((value, b) => (meanLevel[b] += value / pairs.length));
     const shift = medianShift(pair.first.counts, level);
-    const shifts = [shift, pair.alone ? shift : medianShift(pair.second.counts, level)] as const;
-    const mask = new Uint8Array(bins.columns * bins.rows);
-    scanner.scan(pair, level, shifts, suspect, mask, sums);
-    return mask;
+    shifts.push([shift, pair.alone ? shift : medianShift(pair.second.counts, level)]);
+    return kernels.scan(pair, shifts[p]);
   });
-  paintBlocks(meanLevel, rough.grid, level);
+  kernels.paintLevel(meanLevel, rough.grid);
   const standing = findStanding(sums, suspect, grid, bins);
   if (standing) for (const mask of quiet) for (let i = 0; i < mask.length; i++) mask[i] &= standing[i];
   const correction = interpolateBlocks(meanByBlock(sums, grid, bins, standing), grid);
-  for (let i = 0; i < pixels; i++) level[i] += correction[i];
-  return { grid, bins, pairs, quiet, level, roughLevel: meanLevel, roughNoise: rough.noise, sums };
+  for (let i = 0; i < level.length; i++) level[i] += correction[i];
+  const { noise: roughNoise } = rough;
+  return { grid, bins, pairs, shifts, quiet, level, roughLevel: meanLevel, roughNoise, sums, kernels };
 }
 
 /** Sum of 2 x 2 bins, 16 pixels, from which a tracer is suspected. */
-function suspectSums(noise: Float64Array, grid: BlockGrid, { columns, rows }: BinGrid): Float32Array {
-  const suspect = new Float32Array(columns * rows);
+function paintSuspectSums(
+  noise: Float64Array,
+  grid: BlockGrid,
+  { columns, rows }: BinGrid,
+  suspect: Float32Array,
+): void {
   const perNoise = 4 * SUSPECT_LEVEL;
   paintBlocks(
     noise.map((n) => perNoise * n),
     { ...grid, width: columns, height: rows },
     suspect,
   );
-  return suspect;
 }
 
 /** By how much a frame is brighter than the level as a whole, counts. */

@@ -1,8 +1,7 @@
-import { createMatchedFilter, findPeaks, type PeakList } from '../detection/matched-filter';
-import type { ElectronFrames } from './electron-frames';
 import { lonePeaks } from './lone-peaks';
 import { nthElement } from './nth-element';
 import { selfSimilarSigma } from './self-similarity';
+import type { SpotFinder, SpotFrames, SpotWindow } from './spot-frames';
 import { WidthFit } from './width-fit';
 
 /** Size assumed when a recording shows no spots: diffraction-limited, well-sampled optics. */
@@ -20,7 +19,7 @@ const ROUNDS = 5;
 const SOUGHT_AGAIN_CHANGE = 0.1;
 const CHANGE_DONE = 0.002;
 /** Pixels from which the first idea of the width is made. */
-const FIRST_PIXELS = 600_000;
+const FIRST_PIXELS = 300_000;
 
 /** How wide the tracers' images are. */
 export interface SpotSize {
@@ -31,8 +30,7 @@ export interface SpotSize {
 }
 
 interface FoundSpot {
-  frame: number;
-  at: number;
+  window: SpotWindow;
   brightnessE: number;
 }
 
@@ -40,33 +38,31 @@ interface FoundSpot {
  * Standard deviation of a tracer's image: a start from how far the image resembles itself when
  * shifted, then the median over clear, lone spots of the width that makes each most likely.
  */
-export function measureSpotSize(
-  frames: ElectronFrames,
-  width: number,
-  height: number,
-  readVariance: number,
-): SpotSize {
+export function measureSpotSize(frames: SpotFrames): SpotSize {
   const unknown: SpotSize = { sigmaPx: SPOT_SIGMA_UNKNOWN_PX, spreadPx: Number.NaN };
-  const start = (count: number) =>
-    selfSimilarSigma(
-      Array.from({ length: count }, (_, f) => frames.frame(f).noise),
-      width,
-      height,
-    );
+  const { width, height } = frames;
+  // Most optics make spots of about this size; who differs much is looked for once more.
+  let sought = SPOT_SIGMA_UNKNOWN_PX;
+  let finder = frames.forSpots(sought);
+  const start = (count: number) => {
+    const noises = Array.from({ length: count }, (_, f) => finder.noiseOf(f));
+    return selfSimilarSigma(noises, width, height);
+  };
   const few = Math.max(1, Math.min(frames.count, Math.floor(FIRST_PIXELS / (width * height))));
   let sigma = start(few);
   if (Number.isNaN(sigma) && few < frames.count) sigma = start(frames.count);
   if (Number.isNaN(sigma)) return unknown;
   sigma = Math.min(SIGMA_MOST_PX, Math.max(SIGMA_LEAST_PX, sigma));
-  let sought = Number.NaN;
-  let spots: FoundSpot[] = [];
+  let spots: FoundSpot[] | null = null;
   let size = unknown;
   for (let round = 0; round < ROUNDS; round++) {
-    if (!(Math.abs(sigma / sought - 1) < SOUGHT_AGAIN_CHANGE)) {
+    if (Math.abs(sigma / sought - 1) > SOUGHT_AGAIN_CHANGE) {
       sought = sigma;
-      spots = findLoneSpots(frames, width, height, readVariance, sigma);
+      finder = frames.forSpots(sought);
+      spots = null;
     }
-    const fitted = fitWidths(spots, frames, width, readVariance, sigma);
+    spots ??= findLoneSpots(frames, finder, sought);
+    const fitted = fitWidths(spots, frames.readVariance, sigma);
     if (fitted.widths.length < SPOTS_LEAST) return round === 0 ? unknown : size;
     size = summarise(fitted.widths, fitted.errors);
     const next = Math.min(SIGMA_MOST_PX, Math.max(SIGMA_LEAST_PX, size.sigmaPx));
@@ -79,43 +75,29 @@ export function measureSpotSize(
 }
 
 /** Clear spots that stand alone, frame by frame until there are enough. */
-function findLoneSpots(
-  frames: ElectronFrames,
-  width: number,
-  height: number,
-  readVariance: number,
-  sigma: number,
-): FoundSpot[] {
-  const filter = createMatchedFilter(width, height, sigma);
-  const response = new Float32Array(width * height);
-  const peaks: PeakList = { count: 0, at: new Int32Array(1024) };
-  const margin = new WidthFit(sigma, readVariance).marginPx;
+function findLoneSpots(frames: SpotFrames, finder: SpotFinder, sigma: number): FoundSpot[] {
+  const { width, height, readVariance } = frames;
+  const { response, kernelSquares } = finder;
+  // Fits of spots that prove to be wider, but not so much that they are sought again, need more room.
+  const margin = new WidthFit(sigma * (1 + SOUGHT_AGAIN_CHANGE), readVariance).marginPx;
   const spots: FoundSpot[] = [];
   for (let f = 0; f < frames.count && spots.length < SPOTS_MOST; f++) {
-    const { noise, background } = frames.frame(f);
-    filter.apply(noise, response);
-    findPeaks(response, width, height, NEIGHBOUR_RESPONSE, peaks);
+    const peaks = finder.peaksOf(f, NEIGHBOUR_RESPONSE);
     const lone = lonePeaks(peaks, response, width, height, CLEAR_RESPONSE, ALONE_SIGMAS * sigma, margin);
     for (const at of lone.slice(0, SPOTS_MOST - spots.length)) {
-      const perResponse = Math.sqrt(background[at] + readVariance) / filter.kernel.squares;
-      spots.push({ frame: f, at, brightnessE: response[at] * perResponse });
+      const perResponse = Math.sqrt(finder.bareAt(at) + readVariance) / kernelSquares;
+      spots.push({ window: finder.cut(at, margin), brightnessE: response[at] * perResponse });
     }
   }
   return spots;
 }
 
-function fitWidths(
-  spots: readonly FoundSpot[],
-  frames: ElectronFrames,
-  width: number,
-  readVariance: number,
-  sigma: number,
-) {
+function fitWidths(spots: readonly FoundSpot[], readVariance: number, sigma: number) {
   const fit = new WidthFit(sigma, readVariance);
   const widths: number[] = [];
   const errors: number[] = [];
-  for (const { frame, at, brightnessE } of spots) {
-    if (!fit.run(frames.frame(frame), width, at, brightnessE)) continue;
+  for (const { window, brightnessE } of spots) {
+    if (!fit.run(window, brightnessE)) continue;
     widths.push(fit.widthPx);
     errors.push(fit.errorPx);
   }

@@ -1,6 +1,6 @@
 import { choleskyFactor, choleskySolve } from '../detection/cholesky';
 import { pixelShares } from '../pixel-gaussian';
-import type { ElectronFrame } from './electron-frames';
+import type { SpotWindow } from './spot-frames';
 
 /** x, y, brightness, offset of the background; then the width. */
 const NUISANCES = 4;
@@ -41,23 +41,26 @@ export class WidthFit {
     this.rows = Array.from({ length: 6 }, () => new Float64Array(this.side));
   }
 
-  /** Pixels that must lie inside the image on every side of the spot's pixel. */
+  /** Pixels that the window must hold on every side of the spot's pixel. */
   get marginPx(): number {
     return this.reach;
   }
 
-  /** @returns false when the fit finds no spot there. */
-  run(frame: ElectronFrame, imageWidth: number, at: number, brightnessE: number): boolean {
-    const column = at % imageWidth;
-    const corner = at - this.reach * imageWidth - this.reach;
-    const spread = OFFSET_LEAST_E + OFFSET_SHARE * frame.background[at];
+  /**
+   * @param window with the spot's pixel in its middle
+   * @returns false when the fit finds no spot there, or the window is too small for it.
+   */
+  run(window: SpotWindow, brightnessE: number): boolean {
+    const middle = (window.side - 1) / 2;
+    const corner = (middle - this.reach) * (window.side + 1);
+    const spread = OFFSET_LEAST_E + OFFSET_SHARE * window.background[middle * (window.side + 1)];
     let x = this.reach;
     let y = this.reach;
     let n = brightnessE;
     let offset = 0;
-    if (column < this.reach) return false;
+    if (middle < this.reach) return false;
     for (let iteration = 0; iteration < ITERATIONS_MOST; iteration++) {
-      this.accumulate(frame, imageWidth, corner, x, y, n, offset, 1 / (spread * spread));
+      this.accumulate(window, corner, x, y, n, offset, 1 / (spread * spread));
       this.step.set(this.gradient);
       if (!choleskyFactor(this.information, NUISANCES, PARAMETERS)) return false;
       choleskySolve(this.information, NUISANCES, PARAMETERS, this.step);
@@ -93,8 +96,7 @@ export class WidthFit {
 
   /** Gradient of the log-likelihood and lower triangle of the information, for all five parameters. */
   private accumulate(
-    { electrons, background, usable }: ElectronFrame,
-    imageWidth: number,
+    { side: windowSide, electrons, background, usable }: SpotWindow,
     corner: number,
     x: number,
     y: number,
@@ -109,7 +111,7 @@ export class WidthFit {
     gradient.fill(0);
     information.fill(0);
     for (let j = 0; j < side; j++) {
-      for (let i = 0, at = corner + j * imageWidth; i < side; i++, at++) {
+      for (let i = 0, at = corner + j * windowSide; i < side; i++, at++) {
         if (usable[at] === 0) continue;
         const shape = px[i] * py[j];
         const expected = Math.max(EXPECTED_LEAST, background[at] + readVariance + offset + n * shape);

@@ -1,15 +1,18 @@
 import type { LightLevel } from '../detection/light-level';
 import type { SpotKernel } from '../detection/spot-kernel';
+import type { PairKernels } from './pair-kernels';
 import type { SimdExports } from './simd-exports';
 
 /**
- * What detection does with every pixel of a frame. Two sets compute the same: plain TypeScript, which runs
+ * What detection and measuring do with every pixel of a frame. Two sets compute the same: plain TypeScript, which runs
  * everywhere and is the oracle, and WebAssembly with vectors of four numbers, which is several times as fast.
  */
 export interface Kernels {
   readonly name: 'plain' | 'simd';
   /** Memory and operations for frames of one size; worth keeping from frame to frame. */
   forImages(spec: ImageSpec): FrameKernels;
+  /** Memory and operations for measuring the image from pairs of frames of one size. */
+  forPairs(width: number, height: number): PairKernels;
 }
 
 export interface ImageSpec {

@@ -4,9 +4,10 @@ import { DARK_VARIANCE_E2 } from '../detection/second-look';
 import { paintBlocks } from '../image-model/block-grid';
 import type { FrameKernels, ImageSpec, Kernels, Peaks } from './kernels';
 import { electronScale, electronsOf } from './noise-units';
+import { plainPairs } from './plain-pairs';
 
 /** The kernels in plain TypeScript: oracle of the compiled ones, and what computes where those can't run. */
-export const plainKernels: Kernels = { name: 'plain', forImages };
+export const plainKernels: Kernels = { name: 'plain', forImages, forPairs: plainPairs };
 
 function forImages({ width, height, spotSigmaPx }: ImageSpec): FrameKernels {
   const pixels = width * height;

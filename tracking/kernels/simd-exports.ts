@@ -9,7 +9,42 @@ export interface SimdExports {
   memory: SimdMemory;
   /** First byte that the module doesn't use itself. */
   heapBase(): number;
-  mixRows(top: number, bottom: number, share: number, out: number, pixels: number): void;
+  mixRows(top: number, bottom: number, share: number, least: number, out: number, pixels: number): void;
+  scanPair(
+    first: number,
+    second: number,
+    level: number,
+    width: number,
+    height: number,
+    shiftA: number,
+    shiftB: number,
+    alone: number,
+    suspect: number,
+    reachBins: number,
+    sum: number,
+    squares: number,
+    excessA: number,
+    excessB: number,
+    quiet: number,
+    quietSum: number,
+    quietPairs: number,
+    highest: number,
+  ): void;
+  sumBlocks(
+    first: number,
+    second: number,
+    level: number,
+    width: number,
+    height: number,
+    columns: number,
+    rows: number,
+    shiftA: number,
+    shiftB: number,
+    quiet: number,
+    mask: number,
+    maskWidth: number,
+    out: number,
+  ): void;
   respond(
     facts: number,
     counts: number,

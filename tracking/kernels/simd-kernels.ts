@@ -6,8 +6,10 @@ import type { FrameKernels, ImageSpec, Kernels, Peaks } from './kernels';
 import { electronScale, electronsOf, type ElectronScale } from './noise-units';
 import { plainKernels } from './plain-kernels';
 import type { InstantiateSimd, SimdExports } from './simd-exports';
-import { createSimdBackground } from './simd-background';
 import { createSimdLight } from './simd-light';
+import { createSimdPainter } from './simd-painter';
+import { plainPairs } from './plain-pairs';
+import { simdPairs } from './simd-pairs';
 import { reservePlanes } from './simd-planes';
 
 /**
@@ -15,7 +17,14 @@ import { reservePlanes } from './simd-planes';
  * the system grants less) are left to the plain kernels.
  */
 export function createSimdKernels(instantiate: InstantiateSimd): Kernels {
-  return { name: 'simd', forImages: (spec) => simdImages(spec, instantiate) ?? plainKernels.forImages(spec) };
+  return {
+    name: 'simd',
+    forImages: (spec) => simdImages(spec, instantiate) ?? plainKernels.forImages(spec),
+    forPairs: (width, height) => {
+      const simd = instanceOrNull(instantiate);
+      return (simd && simdPairs(simd, width, height)) ?? plainPairs(width, height);
+    },
+  };
 }
 
 function simdImages(spec: ImageSpec, instantiate: InstantiateSimd): FrameKernels | null {
@@ -36,6 +45,7 @@ function simdImages(spec: ImageSpec, instantiate: InstantiateSimd): FrameKernels
   const bad = arena.bytes(at.bad, pixels);
   const background = arena.floats(at.background, pixels);
   const peaks: Peaks = { count: 0, at: arena.integers(at.peaks, at.peaksMost) };
+  const paint = createSimdPainter(simd, arena, at.blockRows, at.paddedWidth, width, height);
   const lightOf = createSimdLight(simd, arena, at, pixels);
   let electrons: ElectronScale = { offset: 0, perCount: 1, saturationE: Infinity };
   let frameLight: LightLevel = { scale: 1, shift: 0 };
@@ -106,7 +116,7 @@ function simdImages(spec: ImageSpec, instantiate: InstantiateSimd): FrameKernels
     response: arena.floats(at.response, pixels),
     bareAt,
     isUsable,
-    paintBackground: createSimdBackground(simd, arena, at, width, height),
+    paintBackground: (blocks, grid) => paint(blocks, grid, 0, at.background),
     setFrame,
     lightLevel: (readVariance) => lightOf(electrons, readVariance),
     respond,

@@ -36,7 +36,7 @@ export function runRecording(
   const recorded = Array.from({ length: frames }, (_, index) => renderer.renderFrame(index));
   const frameAt = (index: number): Frame => ({ width, height, counts: Float32Array.from(recorded[index]) });
   const picked = pickModelFrames(frames, width * height, request.effort);
-  const model = measureImage(picked.map(frameAt), request, picked);
+  const model = measureImage(picked.map(frameAt), request, picked, kernels);
   const recipe = resolveRecipe(request, { ...model, frames, pixelSizeM: PIXEL_SIZE_M });
   const detector = createDetector(model, recipe, kernels);
   const sink = createSpotSink();

@@ -3,6 +3,7 @@ import { openStack, type StackReader } from '@/stacks/open-stack';
 import { measureImage as measure, pickModelFrames } from '@/tracking/measure-image';
 import { resolveRecipe } from '@/tracking/recipe';
 import type { Frame, ImageModel, Recipe, RecipeRequest } from '@/tracking/types';
+import { kernelsOfThisProcess } from '../kernels';
 import { encodeImageModel } from '../encode-image-model';
 import type { MeasureImageInput, MeasureImageOutput } from '../tasks';
 import type { WorkContext } from './work-context';
@@ -34,7 +35,7 @@ export async function modelOf(
     frames.push(await stack.readFrame(frame));
     onProgress((0.5 * frames.length) / picked.length);
   }
-  const model = measure(frames, request, picked);
+  const model = measure(frames, request, picked, kernelsOfThisProcess());
   return { model, recipe: resolveRecipe(request, { ...model, frames: stack.frames, pixelSizeM }) };
 }
 

@@ -1,9 +1,11 @@
 import { describe, expect, test } from 'vitest';
 import { createSpotPainter } from '@/tracking/detection/spot-painter';
-import type { ElectronFrame, ElectronFrames } from '@/tracking/image-model/electron-frames';
+import { spotFrames, type SpotFrames } from '@/tracking/image-model/spot-frames';
 import { measureSpotSize, SPOT_SIGMA_UNKNOWN_PX } from '@/tracking/image-model/spot-size';
 import { createRandom } from '@/tracking/random';
+import { plainKernels } from '@/tracking/kernels/plain-kernels';
 import { brightnessOfSnr } from '@/tracking/simulate/standard-scene';
+import type { Frame, ImageModel } from '@/tracking/types';
 import { expectWithin } from '@/tests/helpers/expect-within';
 
 const SIDE = 320;
@@ -11,6 +13,20 @@ const BACKGROUND_E = 10;
 const READ_NOISE_E = 1.5;
 const FRAMES = 3;
 const LN_DEVIATION = 0.45;
+
+/** A count is an electron. */
+const CAMERA: ImageModel = {
+  width: SIDE,
+  height: SIDE,
+  gainCountsPerE: 1,
+  offsetCounts: 0,
+  readNoiseE: READ_NOISE_E,
+  spotSigmaPx: Number.NaN,
+  saturationCounts: Infinity,
+  badPixels: new Uint8Array(SIDE * SIDE),
+  backgroundE: new Float32Array(SIDE * SIDE).fill(BACKGROUND_E),
+  backgroundDrift: null,
+};
 
 interface Tracers {
   sigmaPx: number;
@@ -21,13 +37,13 @@ interface Tracers {
 }
 
 /** Frames of tracers of log-normal brightness at random places; sizes take five values. */
-function framesOf({ sigmaPx, sizeSpread = 0, perPixel, snr }: Tracers, seed: number): ElectronFrames {
+function framesOf({ sigmaPx, sizeSpread = 0, perPixel, snr }: Tracers, seed: number): SpotFrames {
   const random = createRandom(seed);
   const painters = [-2, -1, 0, 1, 2].map((step) =>
     createSpotPainter(SIDE, SIDE, sigmaPx * (1 + (sizeSpread * step) / Math.SQRT2), Math.ceil(5 * sigmaPx)),
   );
   const median = brightnessOfSnr(snr, BACKGROUND_E, READ_NOISE_E, sigmaPx);
-  const frames = Array.from({ length: FRAMES }, (): ElectronFrame => {
+  const frames = Array.from({ length: FRAMES }, (): Frame => {
     const light = new Float32Array(SIDE * SIDE).fill(BACKGROUND_E);
     for (let tracers = random.poisson(perPixel * SIDE * SIDE); tracers > 0; tracers--) {
       const x = SIDE * random.uniform() - 0.5;
@@ -35,19 +51,12 @@ function framesOf({ sigmaPx, sizeSpread = 0, perPixel, snr }: Tracers, seed: num
       painters[random.integer(5)].paint(light, x, y, median * Math.exp(LN_DEVIATION * random.normal()));
     }
     const electrons = light.map((e) => random.poisson(e) + READ_NOISE_E * random.normal());
-    const perNoise = 1 / Math.sqrt(BACKGROUND_E + READ_NOISE_E ** 2);
-    return {
-      electrons,
-      background: new Float32Array(SIDE * SIDE).fill(BACKGROUND_E),
-      usable: new Uint8Array(SIDE * SIDE).fill(1),
-      noise: electrons.map((e) => (e - BACKGROUND_E) * perNoise),
-    };
+    return { width: SIDE, height: SIDE, counts: electrons };
   });
-  return { count: FRAMES, frame: (index) => frames[index] };
+  return spotFrames(frames, null, CAMERA, plainKernels);
 }
 
-const measure = (tracers: Tracers, seed: number) =>
-  measureSpotSize(framesOf(tracers, seed), SIDE, SIDE, READ_NOISE_E ** 2);
+const measure = (tracers: Tracers, seed: number) => measureSpotSize(framesOf(tracers, seed));
 
 describe('the size of spots', () => {
   // Mean of three recordings; each is told to 0.3 to 0.8 %.
