@@ -21,6 +21,8 @@ export interface ImageFacts {
   offsetCounts: number;
   readNoiseE: number;
   spotSigmaPx: number;
+  /** How much tracers differ in it, standard deviation, px: where fits choose the size of each; else left out. */
+  spotSigmaSpreadPx?: number;
   badPixels: number;
 }
 

@@ -2,6 +2,7 @@ import { createGroupFitter } from './detection/group-fitter';
 import { JOINT_SPOTS_MOST } from './detection/fit-work';
 import { createSpotKernel } from './detection/spot-kernel';
 import { createSpotOrder } from './detection/spot-order';
+import { spotSizes } from './detection/spot-sizes';
 import { SpotTable } from './detection/spot-table';
 import { statedError } from './detection/stated-error';
 import { gainForLevel, levelForFalseMaxima } from './detection/threshold';
@@ -87,7 +88,9 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
   const pixels = width * height;
   const sigma = recipe.spotSizePx;
   const readVariance = recipe.readNoise_e * recipe.readNoise_e;
-  const reach = Math.max(2, Math.ceil(FIT_REACH_SIGMAS[recipe.effort] * sigma));
+  const sizes = spotSizes(sigma, model.spotSigmaSpreadPx);
+  const widest = sizes.sigmaPx[Math.min(sizes.sigmaPx.length - 1, sizes.typical + 2)];
+  const reach = Math.max(2, Math.ceil(FIT_REACH_SIGMAS[recipe.effort] * widest));
   const level = levelForFalseMaxima(recipe.falseSpotsPerFrame, sigma, pixels);
   const lookTwice = recipe.effort === 'full';
 
@@ -102,7 +105,7 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
   const stepDonePx = STEP_DONE_PX[recipe.effort];
   const fitsOptions = { width, height, spotSigmaPx: sigma, readVariance, reach, stepDonePx };
   const fits = createSpotFits(pictures, fitsOptions, room);
-  const fitter = createGroupFitter({ ...fitsOptions, bareAt: pictures.bareAt }, fits);
+  const fitter = createGroupFitter({ ...fitsOptions, sizes, bareAt: pictures.bareAt }, fits);
   const table = new SpotTable();
   let refitted = new Uint8Array(256);
   const near = new Int32Array(64);
@@ -128,9 +131,10 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
       const y = (at - x) / width;
       const noise = Math.sqrt(pictures.bareAt(at) + readVariance);
       const brightness = (response[at] * noise) / pictures.kernel.squares;
-      table.add(x + subPixel(at, 1, x, width), y + subPixel(at, width, y, height), brightness, response[at]);
+      const subX = x + subPixel(at, 1, x, width);
+      table.add(subX, y + subPixel(at, width, y, height), brightness, response[at], sizes.typical);
     }
-    for (let i = 0; i < table.count; i++) fits.paint(table.x[i], table.y[i], table.n[i]);
+    for (let i = 0; i < table.count; i++) fits.paint(table.x[i], table.y[i], table.n[i], sigma);
   };
 
   /** Vertex of the parabola through the response at a maximum and its two neighbours along an axis. */
@@ -186,9 +190,10 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
     );
     const gainLeast = lookLevel * lookLevel;
     const byResponse = order.byResponse(table, found);
+    if (sizes.sigmaPx.length > 1 && lookTwice) fitOnce(byResponse, cell);
     for (let k = 0; k < found; k++) {
       const seed = byResponse[k];
-      if (table.group[seed] >= 0) continue;
+      if (table.group[seed] >= 0 || table.alive[seed] === 0) continue;
       const count = gather(seed);
       for (let m = 0; m < count; m++) table.turn[members[m]] = k;
       setOffsetSpread(seed);
@@ -197,6 +202,21 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
       fitter.fit(table, members, count, lookTwice, aloneLeast, gainLeast);
     }
     if (lookTwice) refitNextToOthers(cell);
+  };
+
+  /**
+   * Fits all groups once, so that every spot has its size: what a wide one sheds around a spot of typical size
+   * would be taken for one more spot by the neighbours, whose turn is earlier.
+   */
+  const fitOnce = (seeds: Int32Array, cell: number) => {
+    for (const seed of seeds) {
+      if (table.group[seed] >= 0 || table.alive[seed] === 0) continue;
+      const count = gather(seed);
+      setOffsetSpread(seed);
+      fitter.fit(table, members, count, false, 0, 0);
+    }
+    table.group.fill(-1, 0, table.count);
+    table.index(width, height, cell);
   };
 
   /** Groups whose pixels hold light of groups that had their turn later are fitted again, now that those are known. */
@@ -309,10 +329,11 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
     const at = Math.round(yPx) * width + Math.round(xPx);
     const noise = Math.sqrt(pictures.bareAt(at) + readVariance);
     const seen = Math.max(response[at], 1);
-    const i = table.add(xPx, yPx, (seen * noise) / pictures.kernel.squares, response[at]);
+    const light = (seen * noise) / pictures.kernel.squares;
+    const i = table.add(xPx, yPx, light, response[at], sizes.typical);
     // Somebody sees it: it is not dropped as what likelihood alone would not have told from noise.
     table.toldApart[i] = 1;
-    fits.paint(table.x[i], table.y[i], table.n[i]);
+    fits.paint(table.x[i], table.y[i], table.n[i], sigma);
     table.index(width, height, Math.max(TOGETHER_SIGMAS * sigma, 2 * reach + 1));
     table.group.fill(-1, 0, table.count);
     setOffsetSpread(i);

@@ -49,7 +49,7 @@ export function ProvenanceSection({ analysis, sha256 }: ProvenanceProps) {
             ? [
                 {
                   name: 'Image',
-                  value: `${short(imageFacts.gainCountsPerE)} counts per electron, read noise ${short(imageFacts.readNoiseE)} e, offset ${short(imageFacts.offsetCounts)} counts, spot size ${short(imageFacts.spotSigmaPx)} px, ${imageFacts.badPixels} bad pixels`,
+                  value: `${short(imageFacts.gainCountsPerE)} counts per electron, read noise ${short(imageFacts.readNoiseE)} e, offset ${short(imageFacts.offsetCounts)} counts, spot size ${short(imageFacts.spotSigmaPx)} px${differing(imageFacts.spotSigmaSpreadPx)}, ${imageFacts.badPixels} bad pixels`,
                 },
               ]
             : []),
@@ -68,3 +68,9 @@ export function ProvenanceSection({ analysis, sha256 }: ProvenanceProps) {
 }
 
 const short = (value: number) => String(Number(value.toPrecision(3)));
+
+/** Words where tracers differ so much in size that each is fitted with its own. */
+const differing = (spreadPx?: number) =>
+  spreadPx === undefined
+    ? ''
+    : `, ${short(spreadPx)} px more or less from tracer to tracer (each is fitted with its own)`;

@@ -33,6 +33,8 @@ export const analysisViewSchema = z.object({
       offsetCounts: z.number(),
       readNoiseE: z.number(),
       spotSigmaPx: z.number(),
+      /** Where tracers differ in size and each is fitted with its own. */
+      spotSigmaSpreadPx: z.number().optional(),
       badPixels: count,
     })
     .nullable(),
@@ -211,6 +213,7 @@ export const tryOutViewSchema = z.object({
     offsetCounts: z.number(),
     readNoiseE: z.number(),
     spotSigmaPx: z.number(),
+    spotSigmaSpreadPx: z.number().optional(),
     badPixels: count,
   }),
   frames: z.array(

@@ -7,14 +7,14 @@ const EXPECTED_LEAST = 0.05;
 
 /** Shapes, expected light, weights and scores at the present values; the log-likelihood if wanted. */
 export function expectLight(work: FitWork, window: FitWindow, wanted: boolean): number {
-  const { side, spotSigmaPx, weight, score } = work;
+  const { side, sigma, weight, score } = work;
   const { data, fixed, used } = window;
   const pixels = window.width * window.height;
   for (let k = 0; k < pixels; k++) weight[k] = fixed[k] + work.offset;
   for (let s = 0; s < work.count; s++) {
     const at = s * side;
-    pixelShares(work.x[s] - work.boxX[s], spotSigmaPx, side, work.share, work.first, work.second, at);
-    pixelShares(work.y[s] - work.boxY[s], spotSigmaPx, side, work.shareY, work.firstY, work.secondY, at);
+    pixelShares(work.x[s] - work.boxX[s], sigma[s], side, work.share, work.first, work.second, at);
+    pixelShares(work.y[s] - work.boxY[s], sigma[s], side, work.shareY, work.firstY, work.secondY, at);
     const left = Math.max(0, window.x0 - work.boxX[s]);
     const right = Math.min(side, window.x0 + window.width - work.boxX[s]);
     for (let j = 0; j < side; j++) {

@@ -11,6 +11,8 @@ export class FitWork {
   readonly y = new Float64Array(JOINT_SPOTS_MOST);
   /** Photoelectrons. */
   readonly n = new Float64Array(JOINT_SPOTS_MOST);
+  /** Standard deviation of each spot's image, px. */
+  readonly sigma = new Float64Array(JOINT_SPOTS_MOST);
   /** Background beyond the window's `fixed`, electrons per pixel. */
   offset = 0;
 
@@ -45,6 +47,7 @@ export class FitWork {
     readonly stepDonePx: number,
   ) {
     this.side = 2 * reach + 1;
+    this.sigma.fill(spotSigmaPx);
     const room = JOINT_SPOTS_MOST * this.side;
     this.share = new Float64Array(room);
     this.first = new Float64Array(room);

@@ -3,6 +3,8 @@ import { BESIDE_SIGMAS, MERGED_SIGMAS, chanceOfTwo, gainWanted } from './one-or-
 import { DARK_VARIANCE_E2 } from './second-look';
 import { createSpotKernel } from './spot-kernel';
 import type { SpotFits } from './spot-fits';
+import { createSizeChoice } from './size-choice';
+import type { SpotSizes } from './spot-sizes';
 import type { SpotTable } from './spot-table';
 
 export interface GroupFitterOptions {
@@ -10,6 +12,8 @@ export interface GroupFitterOptions {
   height: number;
   spotSigmaPx: number;
   readVariance: number;
+  /** Sizes that spots may have. */
+  sizes: SpotSizes;
   /** Expected light without spots of a pixel of the frame at hand, electrons. */
   bareAt(pixel: number): number;
 }
@@ -50,18 +54,21 @@ export interface GroupFitter {
 }
 
 export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits): GroupFitter {
-  const { width, height, spotSigmaPx, readVariance, bareAt } = options;
+  const { width, height, spotSigmaPx, readVariance, sizes, bareAt } = options;
   const { squares } = createSpotKernel(spotSigmaPx);
   const bestX = new Float64Array(JOINT_SPOTS_MOST);
   const bestY = new Float64Array(JOINT_SPOTS_MOST);
   const bestN = new Float64Array(JOINT_SPOTS_MOST);
+  const bestSize = new Uint8Array(JOINT_SPOTS_MOST);
+  /** Sizes of the members in the attempt at hand. */
+  const size = new Uint8Array(JOINT_SPOTS_MOST);
   const widest = { split: -1, splitX: 0, splitY: 0 };
   let offsetSpreadE = 1;
 
   const paintAll = (table: SpotTable, members: Int32Array, count: number, sign: number) => {
     for (let k = 0; k < count; k++) {
       const i = members[k];
-      joint.paint(table.x[i], table.y[i], sign * table.n[i]);
+      joint.paint(table.x[i], table.y[i], sign * table.n[i], sizes.sigmaPx[table.size[i]]);
     }
   };
 
@@ -78,6 +85,7 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
       joint.x[k] = table.x[i];
       joint.y[k] = table.y[i];
       joint.n[k] = table.n[i];
+      joint.sigma[k] = sizes.sigmaPx[table.size[i]];
       joint.centreX[k] = table.x[i];
       joint.centreY[k] = table.y[i];
     }
@@ -94,6 +102,8 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
       table.sn[i] = joint.sn[k];
     }
   };
+
+  const chooseSizes = createSizeChoice(joint, sizes, start, store);
 
   /** Takes out the faintest member that isn't there, if any; true when one went. */
   const dropOne = (table: SpotTable, members: Int32Array, count: number): boolean => {
@@ -156,6 +166,7 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
       if (count === 1 || !dropOne(table, members, count)) break;
       count--;
     }
+    if (count > 0) chooseSizes(table, members, count, offsetSpreadE);
     findWidest(table, members, count);
     paintAll(table, members, count, 1);
     return count;
@@ -180,7 +191,7 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
   const addFound = (table: SpotTable, members: Int32Array, count: number, response: number) => {
     // What was split off an elongated spot left no peak: its response is the one that its light would have.
     const shown = response < RESPONSE_TRIED ? responseTo(bestX[count], bestY[count], bestN[count]) : response;
-    const fresh = table.add(bestX[count], bestY[count], bestN[count], shown);
+    const fresh = table.add(bestX[count], bestY[count], bestN[count], shown, sizes.typical);
     table.group[fresh] = table.group[members[0]];
     table.turn[fresh] = table.turn[members[0]];
     table.toldApart[fresh] = 1;
@@ -189,12 +200,26 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
       table.x[i] = bestX[k];
       table.y[i] = bestY[k];
       table.n[i] = bestN[k];
+      table.size[i] = bestSize[k];
       if (apart(bestX[k] - bestX[count], bestY[k] - bestY[count]) >= MERGED_SIGMAS) continue;
       table.toldApart[i] = 1;
       table.elongationAsOne[i] = Math.max(table.elongationAsOne[i], table.elongation[i]);
       table.elongationAsOne[fresh] = Math.max(table.elongationAsOne[fresh], table.elongation[i]);
     }
     members[count] = fresh;
+  };
+
+  /** Starts from the members as they are and one more of typical size. */
+  const startBeside = (table: SpotTable, members: Int32Array, count: number) => {
+    start(table, members, count);
+    joint.sigma[count] = sizes.sigmaPx[sizes.typical];
+    for (let k = 0; k < count; k++) size[k] = table.size[members[k]];
+  };
+
+  const costOfSizes = (table: SpotTable, members: Int32Array, count: number): number => {
+    let cost = 0;
+    for (let k = 0; k < count; k++) cost += sizes.cost[table.size[members[k]]];
+    return cost;
   };
 
   /** Tries one more spot near those fitted; true when the data ask for it. */
@@ -214,7 +239,7 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
     joint.centreY[count] = split >= 0 && response < RESPONSE_TRIED ? table.y[members[split]] + splitY : peakY;
     joint.load(count + 1);
     joint.run(count, offsetSpreadE);
-    const before = joint.logLikelihood();
+    const before = joint.logLikelihood() - costOfSizes(table, members, count);
     let beside = 0;
     for (let k = 0; k < count; k++) {
       const near =
@@ -226,23 +251,28 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
     let found = false;
     const attempt = () => {
       joint.run(count + 1, offsetSpreadE);
-      const likelihood = joint.logLikelihood();
+      let likelihood = joint.logLikelihood();
+      for (let k = 0; k < count; k++) likelihood -= sizes.cost[size[k]];
       if (!(likelihood > best && areApart(count + 1))) return;
       found = true;
       best = likelihood;
       bestX.set(joint.x);
       bestY.set(joint.y);
       bestN.set(joint.n);
+      bestSize.set(size);
     };
     if (response >= RESPONSE_TRIED) {
-      start(table, members, count);
+      startBeside(table, members, count);
       joint.x[count] = peakX;
       joint.y[count] = peakY;
       joint.n[count] = peakN;
       attempt();
     }
     if (split >= 0) {
-      start(table, members, count);
+      startBeside(table, members, count);
+      // What looked wide may be two of the usual size.
+      size[split] = sizes.typical;
+      joint.sigma[split] = sizes.sigmaPx[sizes.typical];
       joint.x[count] = joint.x[split] + splitX;
       joint.y[count] = joint.y[split] + splitY;
       joint.x[split] -= splitX;

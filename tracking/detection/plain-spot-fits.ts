@@ -33,7 +33,7 @@ export function createPlainSpotFits(planes: PlainPlanes, options: SpotFitsOption
   const splitX = new Float64Array(JOINT_SPOTS_MOST);
   const splitY = new Float64Array(JOINT_SPOTS_MOST);
   const measured: Elongation = { score: 0, splitX: 0, splitY: 0 };
-  const { x, y, n, sx, sy, sn } = joint;
+  const { x, y, n, sx, sy, sn, sigma } = joint;
   return {
     x,
     y,
@@ -46,7 +46,8 @@ export function createPlainSpotFits(planes: PlainPlanes, options: SpotFitsOption
     splitY,
     centreX,
     centreY,
-    paint: (xPx, yPx, brightness) => painter.paint(model, xPx, yPx, brightness),
+    sigma,
+    paint: (xPx, yPx, brightness, sigmaPx) => painter.paint(model, xPx, yPx, brightness, sigmaPx),
     load: (count) =>
       window.load(electrons, model, usable, width, height, readVariance, centreX, centreY, count, reach),
     run(count, offsetSpreadE) {

@@ -30,8 +30,11 @@ export interface SpotFits {
   readonly centreX: Float64Array;
   readonly centreY: Float64Array;
 
+  /** Standard deviations of the images that `run` assumes, px; those of typical spots to begin with. */
+  readonly sigma: Float64Array;
+
   /** Adds the light of a spot to the model of the frame, or takes it away again (negative brightness). */
-  paint(xPx: number, yPx: number, brightness: number): void;
+  paint(xPx: number, yPx: number, brightness: number, sigmaPx: number): void;
   /** Takes the boxes around the first `count` centres. The model must not hold the spots to be fitted. */
   load(count: number): void;
   /**

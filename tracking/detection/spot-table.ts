@@ -7,6 +7,8 @@ export class SpotTable {
   sx = new Float64Array(256);
   sy = new Float64Array(256);
   sn = new Float64Array(256);
+  /** Number of its size in the list of `spotSizes`. */
+  size = new Uint8Array(256);
   /** Matched-filter response that found it. */
   response = new Float64Array(256);
   /** Score of being longer one way than the other, see `elongation.ts`. */
@@ -30,7 +32,7 @@ export class SpotTable {
   private cellStart = new Int32Array(1);
   private cellSpots = new Int32Array(256);
 
-  add(x: number, y: number, n: number, response: number): number {
+  add(x: number, y: number, n: number, response: number, size = 0): number {
     if (this.count === this.x.length) this.grow();
     const i = this.count++;
     this.x[i] = x;
@@ -40,6 +42,7 @@ export class SpotTable {
     this.sy[i] = Infinity;
     this.sn[i] = Infinity;
     this.response[i] = response;
+    this.size[i] = size;
     this.elongation[i] = 0;
     this.elongationAsOne[i] = 0;
     this.doubtX[i] = 0;
@@ -123,6 +126,7 @@ export class SpotTable {
     this.sy = numbers(this.sy);
     this.sn = numbers(this.sn);
     this.response = numbers(this.response);
+    this.size = wider(new Uint8Array(room), this.size);
     this.elongation = numbers(this.elongation);
     this.elongationAsOne = numbers(this.elongationAsOne);
     this.doubtX = numbers(this.doubtX);

@@ -15,6 +15,7 @@ export const SHARED_ARRAYS = [
   'splitY',
   'centreX',
   'centreY',
+  'sigma',
 ] as const;
 export const SHARED_BYTES = 8 * JOINT_SPOTS_MOST;
 /** Behind them the strongest peak of the residual: response, x, y, brightness. */

@@ -39,6 +39,7 @@ export function createSimdSpotFits(
   const shared = (name: (typeof SHARED_ARRAYS)[number]) =>
     new Float64Array(buffer, fit + SHARED_BYTES * SHARED_ARRAYS.indexOf(name), JOINT_SPOTS_MOST);
   const found = new Float64Array(buffer, fit + PEAK_AT, 4);
+  shared('sigma').fill(options.spotSigmaPx);
   const peak: ResidualPeak = { response: 0, xPx: 0, yPx: 0, brightness: 0 };
   return {
     x: shared('x'),
@@ -52,7 +53,8 @@ export function createSimdSpotFits(
     splitY: shared('splitY'),
     centreX: shared('centreX'),
     centreY: shared('centreY'),
-    paint: (xPx, yPx, brightness) => simd.paintSpot(fit, xPx, yPx, brightness),
+    sigma: shared('sigma'),
+    paint: (xPx, yPx, brightness, sigmaPx) => simd.paintSpot(fit, xPx, yPx, brightness, sigmaPx),
     load: (count) => simd.loadJointFitWindow(fit, count),
     run: (count, offsetSpreadE) => simd.runJointFit(fit, count, offsetSpreadE) === 1,
     elongate: () => simd.elongateJointFit(fit),

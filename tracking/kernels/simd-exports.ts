@@ -108,7 +108,7 @@ export interface SimdExports {
     readVariance: number,
     stepDone: number,
   ): number;
-  paintSpot(fit: number, x: number, y: number, brightness: number): void;
+  paintSpot(fit: number, x: number, y: number, brightness: number, sigma: number): void;
   loadJointFitWindow(fit: number, count: number): void;
   runJointFit(fit: number, count: number, offsetSpread: number): number;
   elongateJointFit(fit: number): void;

@@ -1,5 +1,6 @@
 import type { ImageFacts } from '@/lib/analysis-facts';
 import { openStack, type StackReader } from '@/stacks/open-stack';
+import { spotSizes } from '@/tracking/detection/spot-sizes';
 import { measureImage as measure, pickModelFrames } from '@/tracking/measure-image';
 import { resolveRecipe } from '@/tracking/recipe';
 import type { Frame, ImageModel, Recipe, RecipeRequest } from '@/tracking/types';
@@ -41,8 +42,10 @@ export async function modelOf(
 
 /** What people are told of an image model. */
 export function imageFacts(model: ImageModel): ImageFacts {
-  const { gainCountsPerE, offsetCounts, readNoiseE, spotSigmaPx } = model;
+  const { gainCountsPerE, offsetCounts, readNoiseE, spotSigmaPx, spotSigmaSpreadPx = 0 } = model;
+  const several = spotSizes(spotSigmaPx, spotSigmaSpreadPx).sigmaPx.length > 1;
   let badPixels = 0;
   for (const bad of model.badPixels) badPixels += bad;
-  return { gainCountsPerE, offsetCounts, readNoiseE, spotSigmaPx, badPixels };
+  const facts = { gainCountsPerE, offsetCounts, readNoiseE, spotSigmaPx, badPixels };
+  return several ? { ...facts, spotSigmaSpreadPx } : facts;
 }

@@ -219,7 +219,7 @@ describe('compiled fits say the same of what they fitted', () => {
 
   test('the strongest peak of the residual', () => {
     each(1, ({ plain, simd }) => {
-      for (const fits of [plain, simd]) fits.paint(fits.x[0], fits.y[0], fits.n[0]);
+      for (const fits of [plain, simd]) fits.paint(fits.x[0], fits.y[0], fits.n[0], fits.sigma[0]);
       const [a, b] = [simd.look(), plain.look()];
       scores(a.response, b.response);
       expect([a.xPx, a.yPx]).toEqual([b.xPx, b.yPx]);

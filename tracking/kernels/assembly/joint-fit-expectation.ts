@@ -1,4 +1,4 @@
-import { BOX_X, BOX_Y, N, X, Y, settingsOf, shareAt } from './joint-fit-layout';
+import { BOX_X, BOX_Y, N, SIGMA, X, Y, settingsOf, shareAt } from './joint-fit-layout';
 import { logOf } from './joint-fit-log';
 import { shareLight } from './joint-fit-shares';
 import { laneSum } from './joint-fit-sums';
@@ -18,7 +18,7 @@ export function shareJointFit(fit: usize, count: i32): void {
     const y = <f32>(load<f64>(fit + Y + at) - <f64>(boxY + s.y0));
     const along = shareAt(fit, room, i, 0);
     const next = (<usize>room) << 2;
-    const sigma = <f32>s.sigma;
+    const sigma = <f32>load<f64>(fit + SIGMA + at);
     shareLight(x, sigma, s.side, -boxX, min(s.side, s.width - boxX), along, along + next, along + 2 * next);
     const down = along + 3 * next;
     shareLight(y, sigma, s.side, -boxY, min(s.side, s.height - boxY), down, down + next, down + 2 * next);

@@ -19,10 +19,12 @@ export const SPLIT_X: usize = 336;
 export const SPLIT_Y: usize = 384;
 export const CENTRE_X: usize = 432;
 export const CENTRE_Y: usize = 480;
+/** Standard deviation of each spot's image. */
+export const SIGMA: usize = 528;
 /** Strongest peak of the residual: response, x, y, brightness. */
-export const PEAK: usize = 528;
+export const PEAK: usize = 576;
 
-const SETTINGS: usize = 576;
+const SETTINGS: usize = 608;
 // First column and row of each spot's box in the window, i32.
 export const BOX_X: usize = 768;
 export const BOX_Y: usize = 800;
@@ -70,6 +72,7 @@ export class Settings {
   /** Taps of the residual filter, f32, at distance 0 .. tapReach. */
   taps: usize = 0;
   tapReach: i32 = 0;
+  /** Standard deviation of a typical spot. */
   sigma: f64 = 0;
   readVariance: f64 = 0;
   /** A fit has converged when no spot moves farther than this, px. */

@@ -3,7 +3,7 @@ import { shareLight } from './joint-fit-shares';
 import { roundPx } from './joint-fit-window';
 
 /** Adds the light of a spot to the model of the image, or takes it away again (negative brightness). */
-export function paintSpot(fit: usize, x: f64, y: f64, brightness: f64): void {
+export function paintSpot(fit: usize, x: f64, y: f64, brightness: f64, sigma: f32): void {
   const s = settingsOf(fit);
   const left = roundPx(x) - s.reach;
   const top = roundPx(y) - s.reach;
@@ -11,7 +11,6 @@ export function paintSpot(fit: usize, x: f64, y: f64, brightness: f64): void {
   const along = shareAt(fit, s.shareRoom, SPOTS_MOST, 0);
   const next = (<usize>s.shareRoom) << 2;
   const down = along + 3 * next;
-  const sigma = <f32>s.sigma;
   const columns = s.imageWidth - left;
   shareLight(<f32>(x - <f64>left), sigma, s.side, -left, columns, along, along + next, along + 2 * next);
   shareLight(<f32>(y - <f64>top), sigma, s.side, 0, s.side, down, down + next, down + 2 * next);
