@@ -14,7 +14,7 @@ await runToExit(async () => {
   const path = fileArgument('backup', data);
   if (existsSync(path)) throw new PlainStop(`${path} is there already: name a new file.`, 2);
   await ensurePackages(say);
-  const databaseUrl = readStartSettings(process.env).databaseUrl ?? undefined;
+  const databaseUrl = readStartSettings(process.env).ownerUrl ?? undefined;
   const manifest = await makeBackup(data, path, { say, databaseUrl });
   process.stdout.write(
     `Backup ${path}: ${contentWords(manifest)}.\n` +

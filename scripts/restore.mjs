@@ -12,7 +12,7 @@ await runToExit(async () => {
   const data = dataFolder(process.env);
   const path = fileArgument('restore', data);
   await ensurePackages(say);
-  const databaseUrl = readStartSettings(process.env).databaseUrl ?? undefined;
+  const databaseUrl = readStartSettings(process.env).ownerUrl ?? undefined;
   const manifest = await restoreBackup(path, data, { say, databaseUrl });
   process.stdout.write(
     `Restored into ${data}: ${contentWords(manifest)}, as on ${manifest.madeAt}.\n` +

@@ -13,7 +13,7 @@ import { readRunning, removeRunning, writeRunning } from './platform/running.mjs
 import { sayOn } from './platform/say.mjs';
 import { ensureDataFolder, ensureSecrets } from './platform/secrets.mjs';
 import { readStartSettings } from './platform/start-settings.mjs';
-import { makeDemo, migrate } from './platform/steps-of-start.mjs';
+import { makeDemo, migrate, migrationEnv } from './platform/steps-of-start.mjs';
 import { onStopSignals } from './platform/stop-signals.mjs';
 import { createSupervisor } from './platform/supervise.mjs';
 import { superviseWebAndWorkers } from './platform/web-and-workers.mjs';
@@ -91,7 +91,9 @@ async function start() {
 async function bringUp(settings, supervisor, isStopping) {
   const { url, port, data, workers, withDemo } = settings;
   await ensurePackages(say);
-  const databaseUrl = settings.databaseUrl ?? (await startPrivateCluster(data, { say, supervisor }));
+  const database = settings.databaseUrl
+    ? { ownerUrl: settings.ownerUrl ?? settings.databaseUrl, applicationUrl: settings.databaseUrl }
+    : await startPrivateCluster(data, { say, supervisor });
   await ensureBundles({ names: ['migrate', 'worker', ...(withDemo ? ['demo'] : [])], say });
   const env = {
     ...process.env,
@@ -99,13 +101,15 @@ async function bringUp(settings, supervisor, isStopping) {
     BEADLINE_DATA: data,
     BEADLINE_ROOT: ROOT,
     BEADLINE_CODE_VERSION: codeVersion(),
-    DATABASE_URL: databaseUrl,
+    DATABASE_URL: database.applicationUrl,
+    // The owner's password is for migrations alone.
+    DATABASE_OWNER_URL: undefined,
     // Behind a proxy the address that browsers see is another one.
     NEXTAUTH_URL: process.env.NEXTAUTH_URL || url,
     NEXTAUTH_SECRET: process.env.NEXTAUTH_SECRET || ensureSecrets(data).secrets.nextauthSecret,
     NEXT_TELEMETRY_DISABLED: '1',
   };
-  await migrate(env, say);
+  await migrate({ ...env, ...migrationEnv(database) }, say);
   await ensureWebBuild(say);
   const howToSignIn = withDemo ? await makeDemo(env, say) : NO_DEMO_HINT;
   if (isStopping()) return;

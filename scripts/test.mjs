@@ -11,10 +11,15 @@ import { PlainStop } from './platform/plain-stop.mjs';
 import { ensurePythonReaders } from './platform/python-readers.mjs';
 import { endCommands } from './platform/run-command.mjs';
 import { sayOn } from './platform/say.mjs';
-import { migrate } from './platform/steps-of-start.mjs';
+import { migrate, migrationEnv } from './platform/steps-of-start.mjs';
 import { onStopSignals } from './platform/stop-signals.mjs';
 import { createSupervisor } from './platform/supervise.mjs';
-import { makeTemporaryFolder, removeFolders, startTestCluster } from './platform/test-cluster.mjs';
+import {
+  applicationUrlOf,
+  makeTemporaryFolder,
+  removeFolders,
+  startTestCluster,
+} from './platform/test-cluster.mjs';
 import { selectsAny } from './platform/test-selection.mjs';
 import { ensureWebBuild } from './platform/web-build.mjs';
 
@@ -41,7 +46,8 @@ async function setUp() {
     BEADLINE_CODE_VERSION: codeVersion(),
     NEXTAUTH_SECRET: 'a secret of the tests alone',
   };
-  await migrate({ ...env, DATABASE_URL: templateUrl }, say);
+  const database = { ownerUrl: templateUrl, applicationUrl: applicationUrlOf(templateUrl) };
+  await migrate({ ...env, ...migrationEnv(database) }, say);
   if (selectsAny(args, 'tests/jobs/exports', ROOT))
     Object.assign(env, { TEST_PYTHON: await ensurePythonReaders(say) });
   const withBrowser = selectsAny(args, 'tests/e2e', ROOT);

@@ -3,6 +3,7 @@ import { QueryTypes } from 'sequelize';
 import type { QueryInterface } from 'sequelize';
 import { connect } from '@/models/database';
 import { migrations } from '@/migrations/index';
+import { grantToApplication } from './grant-to-application';
 
 /** Any number will do, as long as every process that migrates asks for the same one. */
 const ADVISORY_LOCK = 7_204_318_801;
@@ -66,7 +67,11 @@ try {
     'CREATE TABLE IF NOT EXISTS schema_migrations (name text PRIMARY KEY, applied_at timestamptz NOT NULL DEFAULT now())',
   );
   if (process.argv[2] === 'down') await umzug.down();
-  else await umzug.up();
+  else {
+    await umzug.up();
+    const role = process.env.BEADLINE_APPLICATION_ROLE;
+    if (role) await grantToApplication(url, role, run);
+  }
 } catch (error) {
   process.stderr.write(`The tables could not be brought up to date: ${(error as Error).message}\n`);
   const cause = (error as Error).cause;

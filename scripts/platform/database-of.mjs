@@ -21,7 +21,7 @@ export async function withDatabaseOf(data, { say, databaseUrl }, work) {
   if (running && (await takes(running))) return work(running);
   const supervisor = createSupervisor({ logs: join(data, 'logs'), say });
   try {
-    return await work(await startPrivateCluster(data, { say, supervisor }));
+    return await work((await startPrivateCluster(data, { say, supervisor })).ownerUrl);
   } finally {
     await supervisor.stop();
   }

@@ -5,7 +5,7 @@ import { prepareClusterPlace } from './cluster-place.mjs';
 import { freePort } from './free-port.mjs';
 import { ensurePostgres } from './postgres-programs.mjs';
 import { ensureProductDatabase, resetOwnerPassword } from './product-database.mjs';
-import { ensureSecrets, privateDatabaseUrl, writeSecrets } from './secrets.mjs';
+import { applicationUrl, ensureSecrets, privateDatabaseUrl, writeSecrets } from './secrets.mjs';
 
 /** Recovery replays at most a few gigabytes of log. */
 const COMES_UP_WITHIN_MS = 180_000;
@@ -14,7 +14,8 @@ const COMES_UP_WITHIN_MS = 180_000;
  * Brings up the private cluster of a data folder under supervision.
  * @param {string} dataFolder absolute, existing
  * @param {{ say: import('./say.mjs').Say, supervisor: import('./supervise.mjs').Supervisor }} options
- * @returns {Promise<string>} address of the product's database
+ * @returns {Promise<{ ownerUrl: string, applicationUrl: string }>} addresses of the product's database for the owner of
+ *   its tables, and for web server and workers
  */
 export async function startPrivateCluster(dataFolder, { say, supervisor }) {
   const { secrets, isNew } = ensureSecrets(dataFolder);
@@ -46,5 +47,5 @@ export async function startPrivateCluster(dataFolder, { say, supervisor }) {
     await waitForServer(cluster, { within_ms: COMES_UP_WITHIN_MS, log: () => server.log.tail(15) });
     await ensureProductDatabase(cluster, secrets);
   });
-  return privateDatabaseUrl(secrets);
+  return { ownerUrl: privateDatabaseUrl(secrets), applicationUrl: applicationUrl(secrets) };
 }

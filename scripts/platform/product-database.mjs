@@ -2,20 +2,28 @@ import { join } from 'node:path';
 import { OWNER, psql } from './cluster.mjs';
 import { PlainStop } from './plain-stop.mjs';
 import { runCommand, tailOf } from './run-command.mjs';
+import { APPLICATION } from './secrets.mjs';
 import { commandAs } from './tied-command.mjs';
 
 /**
- * Makes the product's role and database where they are missing. The role owns its database and is no superuser:
- * a fault in the web server can't read files of the machine through SQL.
+ * Makes the product's roles and database where they are missing. One role owns the database and its tables and makes
+ * migrations; web server and workers have another one, which only reads and writes rows: whatever it is made to say, it
+ * can't switch off the triggers that keep a sign-off. Neither is a superuser, so that no fault in the web server can
+ * read files of the machine through SQL.
  * @param {import('./cluster.mjs').Cluster} cluster
  * @param {import('./secrets.mjs').Secrets} secrets
  */
-export async function ensureProductDatabase(cluster, { databasePassword, ownerPassword }) {
-  const asProduct = { role: 'beadline', password: databasePassword, database: 'beadline', sql: 'SELECT 1' };
-  if ((await psql(cluster, asProduct)).code === 0) return;
+export async function ensureProductDatabase(cluster, secrets) {
+  const { databasePassword, applicationPassword, ownerPassword } = secrets;
+  const isThere = async (/** @type {string} */ role, /** @type {string} */ password) =>
+    (await psql(cluster, { role, password, database: 'beadline', sql: 'SELECT 1' })).code === 0;
+  if ((await isThere('beadline', databasePassword)) && (await isThere(APPLICATION, applicationPassword)))
+    return;
   const sql = `
     SELECT 'CREATE ROLE beadline' WHERE NOT EXISTS (SELECT FROM pg_roles WHERE rolname = 'beadline') \\gexec
     ALTER ROLE beadline LOGIN NOSUPERUSER NOCREATEROLE PASSWORD '${databasePassword}';
+    SELECT 'CREATE ROLE ${APPLICATION}' WHERE NOT EXISTS (SELECT FROM pg_roles WHERE rolname = '${APPLICATION}') \\gexec
+    ALTER ROLE ${APPLICATION} LOGIN NOSUPERUSER NOCREATEROLE NOCREATEDB PASSWORD '${applicationPassword}';
     SELECT 'CREATE DATABASE beadline OWNER beadline'
       WHERE NOT EXISTS (SELECT FROM pg_database WHERE datname = 'beadline') \\gexec
   `;

@@ -5,7 +5,7 @@ import { answersOn } from './free-port.mjs';
 import { dataFolder, ROOT } from './paths.mjs';
 import { PlainStop, runToExit } from './plain-stop.mjs';
 import { sayOn } from './say.mjs';
-import { privateDatabaseUrl, readSecrets } from './secrets.mjs';
+import { applicationUrl, privateDatabaseUrl, readSecrets } from './secrets.mjs';
 
 /**
  * Runs a bundled program in this process, with what it needs to know in its environment. Standard output
@@ -42,7 +42,10 @@ async function knowDatabase(data) {
       `Beadline does not run on ${data}: start it with \`npm start\`, or set DATABASE_URL.`,
       2,
     );
-  process.env.DATABASE_URL = privateDatabaseUrl(secrets);
+  // A product that was started before it had this role runs as the owner still.
+  process.env.DATABASE_URL = secrets.applicationPassword
+    ? applicationUrl(secrets)
+    : privateDatabaseUrl(secrets);
 }
 
 /**

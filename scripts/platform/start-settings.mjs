@@ -14,6 +14,12 @@ export function readStartSettings(env) {
   const databaseUrl = env.DATABASE_URL || null;
   if (databaseUrl && !/^postgres(ql)?:\/\//.test(databaseUrl))
     throw new PlainStop('DATABASE_URL must begin with postgres:// or postgresql://.', 2);
+  const ownerUrl = env.DATABASE_OWNER_URL || null;
+  if (ownerUrl && (!databaseUrl || !sameDatabase(ownerUrl, databaseUrl)))
+    throw new PlainStop(
+      'DATABASE_OWNER_URL must name the same database as DATABASE_URL, by the role that owns its tables.',
+      2,
+    );
   const smtpUrl = env.BEADLINE_SMTP_URL?.trim();
   // Said now rather than by the first mail that does not leave; without the value, which holds a password.
   if (smtpUrl && !/^smtps?:\/\/[^/]/.test(smtpUrl))
@@ -25,6 +31,7 @@ export function readStartSettings(env) {
     url: `http://127.0.0.1:${port}`,
     data: dataFolder(env),
     databaseUrl,
+    ownerUrl: ownerUrl ?? databaseUrl,
     workers: wholeNumber(env, 'BEADLINE_WORKERS', {
       fallback: availableParallelism(),
       low: 0,
@@ -32,6 +39,17 @@ export function readStartSettings(env) {
     }),
     withDemo: env.BEADLINE_DEMO !== '0',
   };
+}
+
+/**
+ * @param {string} one
+ * @param {string} other
+ */
+function sameDatabase(one, other) {
+  if (!URL.canParse(one) || !URL.canParse(other)) return false;
+  const [a, b] = [new URL(one), new URL(other)];
+  const port = (/** @type {URL} */ url) => url.port || '5432';
+  return a.hostname === b.hostname && port(a) === port(b) && a.pathname === b.pathname;
 }
 
 /**

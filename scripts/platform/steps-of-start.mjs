@@ -7,6 +7,18 @@ const runBundle = (/** @type {string} */ name, /** @type {NodeJS.ProcessEnv} */ 
   runCommand([process.execPath, '--enable-source-maps', bundlePath(name)], { cwd: ROOT, env, showErrors });
 
 /**
+ * What migrations need to know: they run as the owner of the tables, and give the application's role its rights.
+ * @param {{ ownerUrl: string, applicationUrl: string }} database
+ */
+export function migrationEnv({ ownerUrl, applicationUrl }) {
+  const [owner, application] = [new URL(ownerUrl).username, new URL(applicationUrl).username];
+  return {
+    DATABASE_URL: ownerUrl,
+    ...(owner === application ? {} : { BEADLINE_APPLICATION_ROLE: decodeURIComponent(application) }),
+  };
+}
+
+/**
  * Brings the tables up to date.
  * @param {NodeJS.ProcessEnv} env with DATABASE_URL
  * @param {import('./say.mjs').Say} say

@@ -7,6 +7,7 @@ import { freePort } from './free-port.mjs';
 import { PlainStop } from './plain-stop.mjs';
 import { ensurePostgres } from './postgres-programs.mjs';
 import { tailOf } from './run-command.mjs';
+import { APPLICATION } from './secrets.mjs';
 
 /** Nothing in a throw-away cluster is worth a wait for the disk. */
 const FAST = {
@@ -47,7 +48,9 @@ export async function startTestCluster(folder, { say, supervisor }) {
   });
   await waitForServer(cluster, { within_ms: 30_000, log: () => server.log.tail(15) });
   // The role has the product's rights and one more: tests make databases.
-  const sql = 'CREATE ROLE beadline LOGIN CREATEDB;\nCREATE DATABASE beadline_template OWNER beadline;';
+  const sql = `CREATE ROLE beadline LOGIN CREATEDB;
+    CREATE ROLE ${APPLICATION} LOGIN;
+    CREATE DATABASE beadline_template OWNER beadline;`;
   const result = await psql(cluster, { sql });
   if (result.code !== 0) throw new PlainStop(`The test database could not be made:\n${tailOf(result)}`);
   const templateUrl = `postgres://beadline@127.0.0.1:${cluster.port}/beadline_template`;
@@ -57,4 +60,14 @@ export async function startTestCluster(folder, { say, supervisor }) {
 /** @param {string[]} folders */
 export function removeFolders(folders) {
   for (const folder of folders) rmSync(folder, { recursive: true, force: true });
+}
+
+/**
+ * The same test database by the role of web server and workers, which owns nothing.
+ * @param {string} ownerUrl
+ */
+export function applicationUrlOf(ownerUrl) {
+  const url = new URL(ownerUrl);
+  url.username = APPLICATION;
+  return url.href;
 }

@@ -19,6 +19,8 @@ export async function startProduct(options: {
   BEADLINE_DATA: string;
   /** Without it the product makes its private cluster. */
   DATABASE_URL?: string;
+  /** Of the owner of the tables, where the product is to run by another role. */
+  DATABASE_OWNER_URL?: string;
   workers: number;
 }): Promise<Product> {
   const { workers, ...settings } = options;
@@ -72,7 +74,7 @@ export async function startProduct(options: {
 /** The product must not see that a test started it. */
 function withoutTestRunner(env: NodeJS.ProcessEnv): NodeJS.ProcessEnv {
   const foreign = (name: string) =>
-    /^(VITEST|TEST_|NODE_ENV$|DATABASE_URL$|NEXTAUTH_|npm_|INIT_CWD$)/.test(name);
+    /^(VITEST|TEST_|NODE_ENV$|DATABASE_URL$|DATABASE_OWNER_URL$|NEXTAUTH_|npm_|INIT_CWD$)/.test(name);
   const kept = Object.entries(env).filter(([name]) => !foreign(name));
   return { NODE_ENV: 'production', ...Object.fromEntries(kept) };
 }

@@ -248,7 +248,7 @@ describe('with the private cluster', () => {
     const work = async (folderOf: string, act: (url: string) => Promise<unknown>) => {
       const supervisor = createSupervisor({ logs: join(folderOf, 'logs'), say: quiet });
       try {
-        return await act(await startPrivateCluster(folderOf, { say: quiet, supervisor }));
+        return await act((await startPrivateCluster(folderOf, { say: quiet, supervisor })).ownerUrl);
       } finally {
         await supervisor.stop();
       }

@@ -25,7 +25,7 @@ afterAll(() => rmSync(data, { recursive: true, force: true }));
 
 async function start(): Promise<string> {
   supervisor = createSupervisor({ logs: join(data, 'logs'), say: quiet });
-  return startPrivateCluster(data, { say: quiet, supervisor });
+  return (await startPrivateCluster(data, { say: quiet, supervisor })).ownerUrl;
 }
 
 async function ask(url: string, sql: string): Promise<string> {
@@ -117,7 +117,7 @@ describe.skipIf(process.getuid?.() !== 0)('as root, with a data folder that post
     const folders: string[] = [];
     const begin = async () => {
       supervisor = createSupervisor({ logs: join(closed, 'logs'), say: quiet });
-      const url = await startPrivateCluster(closed, { say, supervisor });
+      const url = (await startPrivateCluster(closed, { say, supervisor })).ownerUrl;
       folders.push(...lines.join(' ').match(/\/var\/lib\/beadline\/[\w.-]*\w/g)!);
       return url;
     };

@@ -7,6 +7,8 @@ import { models } from '@/models';
 import { callJson, webSettings } from '../../helpers/call-route';
 import { makeDoneAnalysis, remeasureNow } from '../../helpers/corrected-analysis';
 import { freshDatabase, type FreshDatabase } from '../../helpers/fresh-database';
+import { applicationUrlOf } from '@/scripts/platform/test-cluster.mjs';
+import { connect } from '@/models/database';
 import { makeTestLab, type TestLab } from '../../helpers/test-lab';
 
 let database: FreshDatabase;
@@ -36,9 +38,9 @@ const correct = (json: unknown, revision: number) =>
     headers: { 'if-match': `"${revision}"` },
   });
 
-/** By the application's own role. */
-const sql = (statement: string) =>
-  database.sequelize.query(statement.replaceAll(':id', `'${made.analysisId}'`)).then(
+/** By the role that owns the tables. */
+const sql = (statement: string, by = database.sequelize) =>
+  by.query(statement.replaceAll(':id', `'${made.analysisId}'`)).then(
     () => 'done',
     (error: { original?: { code?: string } }) => error.original?.code,
   );
@@ -148,5 +150,50 @@ describe('after a sign-off', () => {
     expect(await sql(`UPDATE spot_chunks SET analysis_id = :id WHERE analysis_id = '${other.id}'`)).toBe(
       'BL001',
     );
+  });
+});
+
+describe('web server and workers, by the role that they have', () => {
+  let application: ReturnType<typeof connect>;
+  beforeAll(() => {
+    application = connect(applicationUrlOf(database.url), { max: 1 });
+  });
+  afterAll(() => application.close());
+  /** PostgreSQL's code for a right that the role does not have. */
+  const FORBIDDEN = '42501';
+
+  it('read and write rows of what is open', async () => {
+    expect(await sql('SELECT count(*) FROM tracks WHERE analysis_id = :id', application)).toBe('done');
+    expect(await sql(`UPDATE labs SET name = name`, application)).toBe('done');
+    expect(await sql('SELECT count(*) FROM pgboss.job', application)).toBe('done');
+  });
+
+  it.each([
+    'UPDATE tracks SET population = 0 WHERE analysis_id = :id',
+    'DELETE FROM candidates WHERE analysis_id = :id',
+    'UPDATE analyses SET signed_off_at = NULL, content_hash = NULL WHERE id = :id',
+  ])('are refused what changes a sign-off: %s', async (statement) => {
+    expect(await sql(statement, application)).toBe('BL001');
+  });
+
+  it.each([
+    'TRUNCATE tracks',
+    'TRUNCATE analyses CASCADE',
+    'ALTER TABLE tracks DISABLE TRIGGER tracks_sealed',
+    'ALTER TABLE analyses DISABLE TRIGGER ALL',
+    'DROP TRIGGER analyses_sealed ON analyses',
+    'DROP TABLE track_points',
+    `CREATE OR REPLACE FUNCTION refuse_change_of_signed() RETURNS trigger LANGUAGE plpgsql AS $$ BEGIN RETURN NEW; END $$`,
+    'DROP FUNCTION refuse_after_sign_off CASCADE',
+    `SET session_replication_role = 'replica'`,
+    'SET ROLE beadline',
+    'CREATE TABLE mine (id int)',
+    'UPDATE corrections SET kind = kind',
+    'DELETE FROM verdicts',
+    'UPDATE settlements SET reason = reason',
+    'DELETE FROM audit_entries',
+    'DELETE FROM schema_migrations',
+  ])('have no right to %s', async (statement) => {
+    expect(await sql(statement, application)).toBe(FORBIDDEN);
   });
 });
