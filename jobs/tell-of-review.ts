@@ -50,15 +50,15 @@ export async function tellOfAssignment(
 /**
  * What follows from a verdict, in the transaction that stores it: strips are composed from the first one on, which
  * also tells of disagreements; a set whose last candidate this was is done; and when every candidate has its readings,
- * those who settle hear of it.
+ * those who settle hear of it. Nothing follows where the truth is known.
  */
 export async function afterVerdict(
   labId: string,
   readerId: string,
-  { analysisId, stored, state, own }: GivenVerdict,
+  { analysisId, rehearsed, stored, state, own }: GivenVerdict,
   transaction: Transaction,
 ): Promise<void> {
-  if (!stored) return;
+  if (!stored || rehearsed) return;
   if (state === 'disagreed' || (await isFirst(analysisId, transaction))) {
     await askForStrips(labId, analysisId, transaction);
   }

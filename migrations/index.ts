@@ -11,6 +11,7 @@ import * as addFlowDetails from './20261201153000-add-flow-details';
 import * as addRehearsals from './20261201154000-add-rehearsals';
 import * as rememberWhatAKeyMade from './20261201155000-remember-what-a-key-made';
 import * as addExports from './20261201152000-add-exports';
+import * as mixKnownCandidates from './20261202110000-mix-known-candidates';
 
 export interface Migration {
   /** File name without its ending: the same for sources and bundles. */
@@ -33,4 +34,5 @@ export const migrations: Migration[] = [
   { name: '20261201153000-add-flow-details', ...addFlowDetails },
   { name: '20261201154000-add-rehearsals', ...addRehearsals },
   { name: '20261201155000-remember-what-a-key-made', ...rememberWhatAKeyMade },
+  { name: '20261202110000-mix-known-candidates', ...mixKnownCandidates },
 ];

@@ -15,6 +15,7 @@ export class Campaign extends Model<InferAttributes<Campaign>, InferCreationAttr
   declare description: CreationOptional<string | null>;
   declare tags: CreationOptional<string[]>;
   declare readings: CreationOptional<number>;
+  declare knownCandidates: CreationOptional<number>;
   declare createdBy: CreationOptional<string | null>;
   declare revision: CreationOptional<number>;
   declare deletedAt: CreationOptional<Date | null>;
@@ -30,6 +31,7 @@ export class Campaign extends Model<InferAttributes<Campaign>, InferCreationAttr
         description: DataTypes.TEXT,
         tags: DataTypes.ARRAY(DataTypes.TEXT),
         readings: DataTypes.SMALLINT,
+        knownCandidates: DataTypes.SMALLINT,
         createdBy: DataTypes.UUID,
         revision: DataTypes.INTEGER,
         deletedAt: DataTypes.DATE,

@@ -1,6 +1,7 @@
 'use client';
 
 import { useState } from 'react';
+import { HereToo } from '@/components/corrections/here-too';
 import { StandingSection } from '@/components/corrections/standing-section';
 import { SpotsPlot } from '@/components/charts/spots-plot';
 import { TrackViewer } from '@/components/canvas/track-viewer';
@@ -111,6 +112,7 @@ export function AnalysisSheet({
         {analysis.recordingName}, {analysis.recipeName ?? 'unnamed recipe'}
       </PageTitle>
       <RehearsalLine rehearsal={analysis.rehearsal} />
+      {done ? <HereToo analysisId={initial.id} place="analysis" /> : null}
       {isError ? <StaleLine what="The progress may be out of date.">It is asked for again.</StaleLine> : null}
       <ProgressPanel analysis={analysis} stopReason={stopReason} />
       <div className="grid grid-cols-[minmax(0,1fr)] gap-x-9 gap-y-6 pt-3 aside:grid-cols-[minmax(0,1fr)_484px]">

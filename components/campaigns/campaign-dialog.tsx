@@ -21,7 +21,13 @@ interface CampaignDialogProps {
   kind?: 'main' | 'outlined';
   title: string;
   submitLabel: string;
-  initial?: { name: string; description: string | null; tags: readonly string[]; readings: number };
+  initial?: {
+    name: string;
+    description: string | null;
+    tags: readonly string[];
+    readings: number;
+    knownCandidates: number;
+  };
   save: (campaign: CampaignCreate) => Promise<SaveCampaignResult>;
 }
 
@@ -37,6 +43,7 @@ export function CampaignDialog({
   const router = useRouter();
   const [open, setOpen] = useState(false);
   const [readings, setReadings] = useState(String(initial?.readings ?? 1));
+  const [known, setKnown] = useState(String(initial?.knownCandidates ?? 0));
   const [busy, setBusy] = useState(false);
   const [name, setName] = useState(initial?.name ?? '');
   const [description, setDescription] = useState(initial?.description ?? '');
@@ -51,6 +58,7 @@ export function CampaignDialog({
       description: description.trim() || null,
       tags: splitTags(tags),
       readings: Number(readings),
+      knownCandidates: known.trim() === '' ? 0 : Number(known),
     });
     if (!checked.success) {
       const errors = checked.error.issues.map(({ path, message }) => ({ path: path.join('.'), message }));
@@ -135,7 +143,15 @@ export function CampaignDialog({
             value={readings}
             onChange={setReadings}
           />
-          {problem && !['name', 'description', 'tags'].some(errorAt) ? (
+          <Field
+            label="Known candidates mixed in, per analysis and reader"
+            help="from rehearsals, to measure readers; 0 to 20, never counted in results"
+            inputMode="numeric"
+            value={known}
+            onChange={(event) => setKnown(event.target.value)}
+            error={errorAt('knownCandidates')}
+          />
+          {problem && !['name', 'description', 'tags', 'knownCandidates'].some(errorAt) ? (
             <ErrorState live what={problem.detail} />
           ) : null}
           <button type="submit" hidden />

@@ -7,17 +7,26 @@ export interface WellColours {
   chosen: string;
 }
 
-/** Read from the page once, so that the style sheet stays the one place where colours are kept. */
+let known: WellColours | null = null;
+
+/**
+ * Read from the page, so that the style sheet stays the one place where colours are kept; and only once, since every
+ * reading after a change of the page makes the browser work out its styles at once.
+ */
 export function readWellColours(element: Element): WellColours {
+  if (known) return known;
   const style = getComputedStyle(element);
   const token = (name: string) => style.getPropertyValue(`--well-${name}`).trim();
-  return {
+  const read = {
     trapped: token('trapped'),
     free: token('free'),
     undecided: token('undecided'),
     event: token('event'),
     chosen: token('chosen'),
   };
+  // Before the style sheet is there nothing is known.
+  if (read.trapped) known = read;
+  return read;
 }
 
 /** Dark edge under every stroke, so that it holds on bright spots. */

@@ -98,10 +98,11 @@ export function ToolLine({ state, viewer, readOnly, onCommand }: ToolLineProps) 
     <div
       role="toolbar"
       aria-label="Corrections"
-      className="flex flex-wrap gap-x-4 gap-y-[6px] pb-[10px] print:hidden"
+      // On a narrow screen one row that is pushed along; keys mean nothing there.
+      className="flex flex-wrap gap-x-4 gap-y-[6px] pb-[10px] print:hidden max-hand:flex-nowrap max-hand:overflow-x-auto max-hand:[&_kbd]:hidden"
     >
       {groups.map((words, index) => (
-        <span key={index} className="flex flex-wrap gap-1">
+        <span key={index} className="flex flex-wrap gap-1 max-hand:shrink-0 max-hand:flex-nowrap">
           {words.map((word) => (
             <ToolWord
               key={word.cap}

@@ -1,6 +1,6 @@
 'use client';
 
-import { useMemo, useState } from 'react';
+import { memo, useMemo, useState } from 'react';
 import { candidateSentence, separationFits, separationPoints } from '@/components/analyses/candidate-words';
 import { SeparationPlot } from '@/components/charts/separation-plot';
 import { KeyCap } from '@/components/ui/button';
@@ -9,6 +9,7 @@ import type { LoadedCandidate } from './candidate-store';
 import { filmBlock } from './film-block';
 import { FilmStrip, sinceText } from './film-strip';
 import { FilmZoom } from './film-zoom';
+import { useFilmFrame } from './use-film-frame';
 import { useDeskKeys } from './use-desk-keys';
 import { usePlay } from './use-play';
 
@@ -24,12 +25,20 @@ interface CandidateViewProps {
   onDrawn?: () => void;
 }
 
-/** Strip, one frame large, and the squared separation: all that there is to see of a candidate. */
-export function CandidatePictures({ loaded, scale, playKey, onDrawn }: CandidateViewProps) {
+/**
+ * Strip, one frame large, and the squared separation: all that there is to see of a candidate. It stays on the page from
+ * one candidate to the next, and is drawn anew only for what it is given: the next one must stand there at once.
+ */
+export const CandidatePictures = memo(function CandidatePictures({
+  loaded,
+  scale,
+  playKey,
+  onDrawn,
+}: CandidateViewProps) {
   const { detail, film: picture, failure } = loaded;
   const { film } = detail;
   const block = useMemo(() => filmBlock(detail), [detail]);
-  const [frame, setFrame] = useState(film.middleFrame);
+  const [frame, setFrame] = useFilmFrame(film);
   const [trails, setTrails] = useState(true);
   const last = film.firstFrame + film.frames - 1;
   const clamp = (at: number) => Math.max(film.firstFrame, Math.min(last, at));
@@ -114,4 +123,4 @@ export function CandidatePictures({ loaded, scale, playKey, onDrawn }: Candidate
       </p>
     </>
   );
-}
+});

@@ -1,6 +1,6 @@
 'use client';
 
-import { useLayoutEffect, useRef } from 'react';
+import { memo, useLayoutEffect, useRef } from 'react';
 import { drawTracks } from '@/components/canvas/draw-tracks';
 import { readWellColours } from '@/components/canvas/stroke-style';
 import type { TrackBlock } from '@/components/canvas/track-block';
@@ -20,7 +20,15 @@ interface FilmCanvasProps {
 }
 
 /** One frame of a film: camera pixels as squares, both tracks as far as they have come by then. */
-export function FilmCanvas({ film, picture, block, frame, sidePx, trails = true, onDrawn }: FilmCanvasProps) {
+export const FilmCanvas = memo(function FilmCanvas({
+  film,
+  picture,
+  block,
+  frame,
+  sidePx,
+  trails = true,
+  onDrawn,
+}: FilmCanvasProps) {
   const canvas = useRef<HTMLCanvasElement>(null);
   // Before the screen shows the page: a candidate never stands there with the frames of another.
   useLayoutEffect(() => {
@@ -49,4 +57,4 @@ export function FilmCanvas({ film, picture, block, frame, sidePx, trails = true,
     onDrawn?.();
   }, [film, picture, block, frame, sidePx, trails, onDrawn]);
   return <canvas ref={canvas} aria-hidden="true" className="block aspect-square w-full" />;
-}
+});

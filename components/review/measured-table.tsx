@@ -1,3 +1,4 @@
+import { memo } from 'react';
 import { chanceText } from '@/components/analyses/candidate-words';
 import { Quantity } from '@/components/ui/quantity';
 import { Cell, HeadCell, Row, Table } from '@/components/ui/table';
@@ -5,7 +6,7 @@ import { DISPLAY_UNITS } from '@/lib/format/unit';
 import type { CandidateView } from '@/lib/views/analysis-view';
 
 /** What was measured of a meeting, as text: the same for eyes and for screen readers. */
-export function MeasuredTable({ candidate }: { candidate: CandidateView }) {
+export const MeasuredTable = memo(function MeasuredTable({ candidate }: { candidate: CandidateView }) {
   const { before, after, series, minSeparation_m } = candidate;
   const least = series.separation_m.indexOf(Math.min(...series.separation_m));
   return (
@@ -44,7 +45,7 @@ export function MeasuredTable({ candidate }: { candidate: CandidateView }) {
       </tbody>
     </Table>
   );
-}
+});
 
 const Unknown = () => <span className="text-ink-3">not known</span>;
 

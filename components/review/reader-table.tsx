@@ -30,6 +30,7 @@ export function ReaderTable({ readers }: { readers: readonly ReaderView[] }) {
           <HeadCell narrow="hide">
             <i>κ</i> with others
           </HeadCell>
+          <HeadCell narrow="hide">Known truth</HeadCell>
         </tr>
       </thead>
       <tbody>
@@ -65,6 +66,9 @@ export function ReaderTable({ readers }: { readers: readonly ReaderView[] }) {
                 </ul>
               )}
             </Cell>
+            <Cell narrow="hide">
+              <KnownText known={row.known} />
+            </Cell>
           </Row>
         ))}
       </tbody>
@@ -72,10 +76,22 @@ export function ReaderTable({ readers }: { readers: readonly ReaderView[] }) {
   );
 }
 
+function KnownText({ known }: { known: ReaderView['known'] }) {
+  if (!known) return <span className="text-ink-3">not measured yet</span>;
+  const { events, eventsYes, others, othersNo, cannotTell } = known;
+  return (
+    <span className="tabular-nums">
+      yes to {formatCount(eventsYes)} of {formatCount(events)} events, no to {formatCount(othersNo)} of{' '}
+      {formatCount(others)} others
+      {cannotTell > 0 ? <span className="text-ink-2">, can’t tell {formatCount(cannotTell)}</span> : null}
+    </span>
+  );
+}
+
 const signed = (value: number) => value.toFixed(2).replace('-', '\u2212');
 
 function KappaText({ kappa: { count, kappa, low, high } }: { kappa: KappaView }) {
-  if (count === 0) return <span className="text-ink-3">none that others judged too</span>;
+  if (count === 0) return <span className="text-ink-3">no candidate yet</span>;
   const from = <span className="text-ink-2"> of {formatCount(count)}</span>;
   if (kappa === null || low === null || high === null) {
     return <span className="text-ink-3">not defined, all one answer{from}</span>;

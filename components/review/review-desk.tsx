@@ -2,6 +2,7 @@
 
 import { useCallback, useRef, useState } from 'react';
 import { useQuery } from '@tanstack/react-query';
+import { HereToo } from '@/components/corrections/here-too';
 import { Answer } from '@/components/data/answer';
 import { api } from '@/components/data/api-client';
 import { Button, ButtonLink } from '@/components/ui/button';
@@ -77,6 +78,7 @@ function Sitting({ queue, ...props }: ReviewDeskProps & { queue: ReviewQueueView
   const noteField = useRef<HTMLTextAreaElement>(null);
   const id = way.candidateAt(sitting);
   const { loaded, failure, retry } = useCandidate(id, way.comingUp(sitting, 8));
+  const drawn = useCallback(() => (id ? measureNextCandidate(id) : undefined), [id]);
   const said = id ? (sitting.said[id] ?? null) : null;
 
   const move = useCallback((to: way.Sitting) => {
@@ -175,6 +177,7 @@ function Sitting({ queue, ...props }: ReviewDeskProps & { queue: ReviewQueueView
       <PathThread levels={levels} actions={progress} />
       <main id="main" tabIndex={-1} className="px-sheet-x-narrow pb-8 pt-4 outline-none hand:px-sheet-x">
         <OutboxLine state={state} outbox={outbox} />
+        <HereToo analysisId={props.analysisId} place="verdicts" />
         {id === null ? (
           <End total={total} keys={keys} back={() => move(way.goBack(sitting))} />
         ) : (
@@ -198,13 +201,7 @@ function Sitting({ queue, ...props }: ReviewDeskProps & { queue: ReviewQueueView
             <div className="grid grid-cols-[minmax(0,1fr)] gap-x-9 gap-y-5 desk:grid-cols-[minmax(0,1fr)_320px]">
               <div className="min-w-0">
                 {loaded ? (
-                  <CandidatePictures
-                    key={id}
-                    loaded={loaded}
-                    scale={scale}
-                    playKey={keys.play}
-                    onDrawn={() => measureNextCandidate(id)}
-                  />
+                  <CandidatePictures loaded={loaded} scale={scale} playKey={keys.play} onDrawn={drawn} />
                 ) : failure ? (
                   <ErrorState live what={failure} action={<Button onClick={retry}>Try again</Button>} />
                 ) : (
@@ -240,6 +237,9 @@ function Sitting({ queue, ...props }: ReviewDeskProps & { queue: ReviewQueueView
                   {props.readings > 1
                     ? `${formatCount(props.readings)} people judge each candidate, each without knowing what the others said.`
                     : 'You judge without knowing what others said.'}
+                  {queue.known > 0
+                    ? ` Among these ${formatCount(total)} are ${formatCount(queue.known)} of rehearsals, whose truth is known: they measure how well readers judge, and count in no result.`
+                    : null}
                 </p>
                 <div className="flex flex-wrap gap-2 pt-[14px]">
                   <Button
@@ -254,7 +254,7 @@ function Sitting({ queue, ...props }: ReviewDeskProps & { queue: ReviewQueueView
                   </Button>
                   {loaded ? (
                     <ButtonLink
-                      href={`/analyses/${props.analysisId}/edit?frame=${loaded.detail.film.middleFrame}&track=${loaded.detail.trackA}`}
+                      href={`/analyses/${loaded.detail.analysisId}/edit?frame=${loaded.detail.film.middleFrame}&track=${loaded.detail.trackA}`}
                     >
                       Correct the tracks
                     </ButtonLink>

@@ -36,7 +36,16 @@ export function useCandidate(id: string | null, coming: readonly string[]) {
   }, [store, id, tries]);
   const key = coming.slice(0, AHEAD).join(' ');
   useEffect(() => {
-    if (key) store.ahead(key.split(' '));
+    if (!key) return;
+    // Only once the candidate that is wanted now has been painted.
+    let timer: ReturnType<typeof setTimeout> | undefined;
+    const request = requestAnimationFrame(() => {
+      timer = setTimeout(() => store.ahead(key.split(' ')), 0);
+    });
+    return () => {
+      cancelAnimationFrame(request);
+      clearTimeout(timer);
+    };
   }, [store, key]);
   const current = arrived?.id === id ? arrived : null;
   const retry = useCallback(() => {

@@ -7,8 +7,11 @@ import type { Film } from '@/lib/review/film';
 const STEP_MS = 120;
 
 /** Runs through the frames of a film, round and round, until stopped. With reduced motion it does not run at all. */
-export function usePlay({ firstFrame, frames }: Film, show: (frame: (before: number) => number) => void) {
-  const [playing, setPlaying] = useState(false);
+export function usePlay(film: Film, show: (frame: (before: number) => number) => void) {
+  const { firstFrame, frames } = film;
+  const [played, setPlayed] = useState<Film | null>(null);
+  // Another film does not play by itself.
+  const playing = played === film;
   useEffect(() => {
     if (!playing) return;
     const timer = setInterval(
@@ -17,12 +20,12 @@ export function usePlay({ firstFrame, frames }: Film, show: (frame: (before: num
     );
     return () => clearInterval(timer);
   }, [playing, firstFrame, frames, show]);
-  const stop = useCallback(() => setPlaying(false), []);
+  const stop = useCallback(() => setPlayed(null), []);
   const toggle = useCallback(() => {
     const still = window.matchMedia('(prefers-reduced-motion: reduce)').matches;
     // Without motion the key still steps, a frame at a time.
     if (still) show((at) => (at + 1 < firstFrame + frames ? at + 1 : firstFrame));
-    else setPlaying((was) => !was);
-  }, [firstFrame, frames, show]);
+    else setPlayed((was) => (was === film ? null : film));
+  }, [film, firstFrame, frames, show]);
   return { playing, stop, toggle };
 }

@@ -8,6 +8,8 @@ export const campaignViewSchema = z.object({
   tags: z.array(z.string()),
   /** How many people judge each reconnection candidate. */
   readings: z.int(),
+  /** How many candidates of known truth each reader judges among those of an analysis. */
+  knownCandidates: z.int(),
   createdBy: personSchema.nullable(),
   deletedAt: z.iso.datetime().nullable(),
   runs: z.int(),

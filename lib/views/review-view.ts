@@ -79,6 +79,8 @@ export const reviewQueueSchema = z.object({
   analysisId: z.uuid(),
   /** How the order comes about. */
   order: z.string(),
+  /** How many of them are of rehearsals, of known truth: they measure readers and count in no result. */
+  known: count,
   items: z.array(
     z.object({
       id: z.uuid(),
@@ -163,8 +165,12 @@ export const readerViewSchema = z.object({
   cannotTell: count,
   /** Changes of mind. */
   changed: count,
-  /** Against the settled verdicts; only verdicts that were given blind count. */
+  /** Against what the principal investigator settled, as far as that was somebody else; blind verdicts alone. */
   settled: kappaSchema,
+  /** Of candidates of known truth, which count nowhere else; null before a reader has judged enough to be told. */
+  known: z
+    .object({ events: count, eventsYes: count, others: count, othersNo: count, cannotTell: count })
+    .nullable(),
   /** With each other reader; empty for those who see only themselves. */
   others: z.array(kappaSchema.extend({ reader: personSchema })),
 });

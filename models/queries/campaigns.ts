@@ -18,6 +18,7 @@ interface Row extends ItemRow, Made {
   description: string | null;
   tags: string[];
   readings: number;
+  known_candidates: number;
   deleted_at: Date | null;
   runs: number;
   recordings: number;
@@ -28,7 +29,7 @@ const RUNS = `(SELECT count(*)::int FROM runs r WHERE r.campaign_id = c.id AND r
 const RECORDINGS = `(SELECT count(*)::int FROM recordings g JOIN runs r ON r.id = g.run_id
   WHERE r.campaign_id = c.id AND r.deleted_at IS NULL AND g.deleted_at IS NULL)`;
 
-const SELECT = `c.id, c.name, c.description, c.tags, c.readings, c.revision, c.created_at, c.updated_at, c.deleted_at,
+const SELECT = `c.id, c.name, c.description, c.tags, c.readings, c.known_candidates, c.revision, c.created_at, c.updated_at, c.deleted_at,
   ${personJson('u')} AS created_by, ${RUNS} AS runs, ${RECORDINGS} AS recordings,
   (SELECT json_build_object(
      'running', count(*) FILTER (WHERE a.state IN ('waiting', 'running')),
@@ -45,6 +46,7 @@ function viewOf(row: Row): CampaignView {
     description: row.description,
     tags: row.tags,
     readings: row.readings,
+    knownCandidates: row.known_candidates,
     createdBy: row.created_by,
     deletedAt: iso(row.deleted_at),
     runs: row.runs,
@@ -94,11 +96,11 @@ export async function createCampaign(
   maker: { labId: string; userId: string },
   input: CampaignCreate,
 ): Promise<CampaignView> {
-  const { name, description = null, tags = [], readings = 1 } = input;
+  const { name, description = null, tags = [], readings = 1, knownCandidates = 0 } = input;
   const { labId, userId } = maker;
   const id = newId();
   await getSequelize().transaction(async (transaction) => {
-    const values = { id, labId, name, description, tags, readings, createdBy: userId };
+    const values = { id, labId, name, description, tags, readings, knownCandidates, createdBy: userId };
     await models().Campaign.create(values, { transaction });
     const entry = { action: 'campaign.made', subjectKind: 'campaign', subjectId: id };
     await writeAudit({ labId, userId, ...entry }, transaction);

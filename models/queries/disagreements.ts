@@ -7,6 +7,7 @@ import type { DisagreementView } from '@/lib/views/review-view';
 import { listPage } from './list-page';
 import { itemOf, type ItemRow } from './person';
 import { execute, selectRows } from './select';
+import { TAKEN } from './rehearsal-mark';
 import { signedOffSql } from './signed-off';
 
 interface Row extends ItemRow {
@@ -30,6 +31,7 @@ export async function listDisagreements(
     `o.state = 'disagreed'`,
     'g.deleted_at IS NULL',
     `NOT (${signedOffSql})`,
+    TAKEN,
   ];
   if (query.analysis) where.push(`c.analysis_id = $${bind.push(query.analysis)}`);
   const page = await listPage<Row>(

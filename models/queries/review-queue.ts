@@ -4,6 +4,7 @@ import type { Verdict } from '@/lib/review/verdict-words';
 import type { ReviewQueueView } from '@/lib/views/review-view';
 import { RECIPE_DEFAULTS } from '@/tracking/recipe';
 import { OUTCOME_COLUMNS, outcomeJoins, type OutcomeRow, type Sight } from './candidate-sight';
+import { knownCandidatesFor } from './known-candidates';
 import { selectRow, selectRows } from './select';
 
 interface Row extends OutcomeRow {
@@ -31,7 +32,7 @@ export const waitsSql = (reader: string): string =>
 
 /**
  * The candidates of an analysis in the order in which a person should judge them. Neither the order nor the list
- * depends on what others said.
+ * depends on what others said. Candidates of known truth stand among them in the same order, by nothing marked.
  * @throws LabError NOT_FOUND
  */
 export async function reviewQueue(labId: string, analysisId: string, sight: Sight): Promise<ReviewQueueView> {
@@ -40,18 +41,20 @@ export async function reviewQueue(labId: string, analysisId: string, sight: Sigh
     [labId, analysisId],
   );
   if (!analysis) throw notFound('analysis');
+  const known = await knownCandidatesFor(labId, analysisId, sight.userId);
   const rows = await selectRows<Row & { waits: boolean }>(
     `SELECT c.id, c.event, c.accepted, c.q_value, jsonb_array_length(c.facts->'failed') AS failed,
-       ${OUTCOME_COLUMNS}, ${assignedSql('$3')} AS assigned, ${waitsSql('$3')} AS waits
+       ${OUTCOME_COLUMNS}, ${assignedSql('$3')} AS assigned, CASE WHEN c.analysis_id = $2 THEN ${waitsSql('$3')} ELSE own.verdict IS NULL END AS waits
      FROM candidates c ${outcomeJoins('$3')}
-     WHERE c.lab_id = $1 AND c.analysis_id = $2 AND c.ended_revision IS NULL`,
-    [labId, analysisId, sight.userId],
+     WHERE c.lab_id = $1 AND (c.analysis_id = $2 OR c.id = ANY($4::uuid[])) AND c.ended_revision IS NULL`,
+    [labId, analysisId, sight.userId, known],
   );
   const order = reviewOrder(analysis.rate ?? RECIPE_DEFAULTS.falseDiscoveryRate);
   const ranked = rows.map((row) => ({ ...row, qValue: row.q_value })).sort(order);
   return {
     analysisId,
     order: REVIEW_ORDER_WORDS,
+    known: known.length,
     items: ranked.map(({ id, event, accepted, own_verdict, assigned, waits }) => ({
       id,
       event,

@@ -23,9 +23,12 @@ interface Place extends OutcomeRow {
   event: number;
   revision: number;
   analysis_state: string;
+  /** Of a rehearsal: its truth is known, and it is judged to measure readers. */
+  rehearsed: boolean;
 }
 
-const PLACE = `SELECT c.id, c.analysis_id, c.event, c.revision, a.state AS analysis_state, ${OUTCOME_COLUMNS}
+const PLACE = `SELECT c.id, c.analysis_id, c.event, c.revision, a.state AS analysis_state,
+    EXISTS (SELECT FROM rehearsals h WHERE h.recording_id = a.recording_id) AS rehearsed, ${OUTCOME_COLUMNS}
   FROM candidates c JOIN analyses a ON a.id = c.analysis_id ${outcomeJoins('$3')}
   WHERE c.lab_id = $1 AND c.id = $2`;
 
@@ -82,6 +85,8 @@ export interface GivenVerdict {
   analysisId: string;
   /** False where the same had been stored before: sent again after its answer was lost. */
   stored: boolean;
+  /** Its candidate is of a rehearsal: nothing follows from it. */
+  rehearsed: boolean;
   state: OutcomeRow['state'];
 }
 
@@ -103,13 +108,13 @@ export async function giveVerdict(
   const place = await placeOf(labId, candidateId, sight, transaction);
   await assertJudgeable(labId, place, transaction);
   const before = await ownVerdict(labId, candidateId, sight, transaction);
-  const { analysis_id: analysisId } = place;
+  const { analysis_id: analysisId, rehearsed } = place;
   const given = { verdict: input.verdict, reason: input.reason ?? null, note: input.note || null };
   const same =
     before.verdict === given.verdict && before.reason === given.reason && before.note === given.note;
   const starts = ifMatch ?? [before.revision];
   if (same && (starts.includes(before.revision) || starts.includes(before.revision - 1))) {
-    return { own: before, analysisId, stored: false, state: place.state };
+    return { own: before, analysisId, rehearsed, stored: false, state: place.state };
   }
   if (place.state === 'settled') {
     throw new LabError('STATE', 'The principal investigator has settled this candidate: its verdict stands.');
@@ -142,7 +147,8 @@ export async function giveVerdict(
   const detail = { event: place.event, candidateId };
   await writeAudit({ labId, userId: sight.userId, ...entry, detail }, transaction);
   const { state } = await placeOf(labId, candidateId, sight, transaction);
-  return { own: await ownVerdict(labId, candidateId, sight, transaction), analysisId, stored: true, state };
+  const own = await ownVerdict(labId, candidateId, sight, transaction);
+  return { own, analysisId, rehearsed, stored: true, state };
 }
 
 /** Readers of one candidate write one after the other, so that each sees where it stands. */

@@ -47,7 +47,13 @@ export default async function ReviewPage() {
       <MarginNote title="Kappa">
         Cohen’s kappa (1960): agreement beyond chance, 1 for always, 0 for no more than chance; in brackets
         the interval of 95 % of Fleiss, Cohen and Everitt (1969), which is too narrow for few candidates. Only
-        verdicts that were given blind count.
+        verdicts that were given blind count. Against settled: what the principal investigator settled, mostly
+        what readers disagree on; where they agree, a reader would be compared with themselves.
+      </MarginNote>
+      <MarginNote title="Known truth">
+        A campaign can mix candidates of rehearsals among those to judge; the desk says how many. Their truth
+        is known, so they tell how often a reader is right. They count in no result and in no other number
+        here.
       </MarginNote>
       <MarginNote title="What becomes an event">
         A candidate that its readers agree on, or that the principal investigator settled, with “yes”.

@@ -2,6 +2,7 @@ import type { Metadata } from 'next';
 import { requireViewer } from '@/auth/page';
 import { may } from '@/auth/viewer';
 import { CarrySection } from '@/components/corrections/carry-section';
+import { HereToo } from '@/components/corrections/here-too';
 import { HistoryTable } from '@/components/corrections/history-table';
 import { PathThread } from '@/components/ui/path-thread';
 import { PageTitle, Sheet } from '@/components/ui/sheet';
@@ -35,6 +36,7 @@ export default async function HistoryPage({ params }: { params: Promise<{ analys
       />
       <Sheet>
         <PageTitle>History of corrections, {analysis.recordingName}</PageTitle>
+        <HereToo analysisId={analysis.id} place="history" />
         <HistoryTable analysisId={analysis.id} reason={reason} />
         <CarrySection analysis={analysis} reason={reason} />
       </Sheet>
