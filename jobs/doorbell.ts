@@ -1,6 +1,7 @@
 import PgBoss from 'pg-boss';
 import type { Transaction } from 'sequelize';
 import { rawClient } from '@/models/raw-client';
+import { callWorkers } from './wake-up';
 
 /**
  * One queue for all kinds of work: a message only says "there is something to do", the work itself
@@ -39,7 +40,7 @@ export async function openDoorbell(connectionString: string): Promise<PgBoss> {
   return boss;
 }
 
-/** Rings when, and only when, the transaction commits. */
+/** Rings when, and only when, the transaction commits; workers that listen come at once, others when they next look. */
 export async function ring(jobRunId: string, transaction: Transaction): Promise<void> {
   const boss = await doorbell();
   const client = rawClient(transaction);
@@ -52,6 +53,7 @@ export async function ring(jobRunId: string, transaction: Transaction): Promise<
       db: { executeSql: (text, values) => client.query(text, values) },
     },
   );
+  await callWorkers(transaction);
 }
 
 /** Ends the connection to the queue, if there is one. */

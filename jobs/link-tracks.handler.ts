@@ -28,7 +28,8 @@ export const linkTracksHandler: JobHandler<Record<string, never>> = {
       await dropStagedTracks(analysisId, transaction);
       await writeTracks(analysisId, tracks, transaction);
       await enterStage(analysisId, 'measure-flow', transaction);
-      await enqueueJob(measureFlowJob, { labId, subjectId: analysisId, payload: {} }, transaction);
+      const payload = { part: 'populations' as const };
+      await enqueueJob(measureFlowJob, { labId, subjectId: analysisId, payload }, transaction);
     });
   },
   onGivenUp: ({ subjectId }, reason, transaction) => giveUpAnalysis(subjectId, reason, transaction),

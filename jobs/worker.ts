@@ -9,9 +9,10 @@ import type { JobHandler } from './job-context';
 import { reapSilent } from './reap-silent';
 import { runClaim, type ClaimEnd } from './run-claim';
 import type { Say } from './say';
+import { openWakeUp } from './wake-up';
 
 export interface WorkerTimes {
-  /** Pause between two looks at the doorbell. */
+  /** Pause between two looks at the doorbell, for a worker that nobody called meanwhile. */
   pollMs: number;
   /** Between two looks at the work itself, bell or no bell: for work that is due again, or whose bell was lost. */
   sweepMs: number;
@@ -58,6 +59,7 @@ export async function startWorker(options: WorkerOptions): Promise<RunningWorker
   const leaving = new AbortController();
   const pool = new ComputePool(1, { childPath: options.childPath });
   const boss = await openDoorbell(databaseUrl());
+  const wakeUp = openWakeUp(databaseUrl());
   await addWorker({ id, host: hostname(), pid: process.pid, codeVersion: codeVersion() });
   say('info', 'worker started', { worker: id });
 
@@ -108,7 +110,7 @@ export async function startWorker(options: WorkerOptions): Promise<RunningWorker
     let lastSweep = 0;
     while (!leaving.signal.aborted) {
       try {
-        const sweepDue = Date.now() - lastSweep >= times.sweepMs;
+        const sweepDue = wakeUp.heard() || Date.now() - lastSweep >= times.sweepMs;
         if (sweepDue) lastSweep = Date.now();
         if ((sweepDue || (await heardBell())) && (await workOnce())) {
           // There is often more where that came from.
@@ -119,12 +121,13 @@ export async function startWorker(options: WorkerOptions): Promise<RunningWorker
         say('error', 'worker could not go on for a moment', { worker: id, cause });
         await pause(times.sweepMs, leaving.signal);
       }
-      await pause(times.pollMs, leaving.signal);
+      await wakeUp.pause(times.pollMs, leaving.signal);
     }
   };
 
   const ended = loop().then(async () => {
     await life.stop();
+    await wakeUp.close();
     await pool.close();
     await endWorker(id).catch(() => undefined);
     await boss.stop({ graceful: false, wait: true });

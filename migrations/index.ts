@@ -10,6 +10,7 @@ import * as sealVerdicts from './20261201151500-seal-verdicts';
 import * as addFlowDetails from './20261201153000-add-flow-details';
 import * as addRehearsals from './20261201154000-add-rehearsals';
 import * as rememberWhatAKeyMade from './20261201155000-remember-what-a-key-made';
+import * as addFlowParts from './20261202140000-add-flow-parts';
 import * as addExports from './20261201152000-add-exports';
 import * as mixKnownCandidates from './20261202110000-mix-known-candidates';
 
@@ -35,4 +36,5 @@ export const migrations: Migration[] = [
   { name: '20261201154000-add-rehearsals', ...addRehearsals },
   { name: '20261201155000-remember-what-a-key-made', ...rememberWhatAKeyMade },
   { name: '20261202110000-mix-known-candidates', ...mixKnownCandidates },
+  { name: '20261202140000-add-flow-parts', ...addFlowParts },
 ];

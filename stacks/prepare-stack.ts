@@ -65,6 +65,22 @@ async function writeIndex(outDir: string, bytes: Uint8Array): Promise<void> {
   }
 }
 
+/**
+ * Walks the page list and writes an index by which frames can be read while they are still being checked.
+ * `prepareStack` writes the final one over it, which differs in what the counts themselves tell.
+ * @throws StackRefusal when it is no usable stack; nothing has been written then.
+ */
+export async function indexPages(
+  source: StackSource,
+  outDir: string,
+  options: InspectOptions,
+): Promise<Pick<StackIndex, 'frames' | 'width' | 'height'>> {
+  const index = (await collected(source, outDir, options)).build();
+  await writeIndex(outDir, encodeStackIndex(index));
+  const { frames, width, height } = index;
+  return { frames, width, height };
+}
+
 /** Bits that carry information, once the camera's ceiling has been seen in the counts. */
 function seenBits(
   index: StackIndex,

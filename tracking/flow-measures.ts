@@ -123,6 +123,6 @@ export interface MeasureFlowOptions {
   /** Told the share done, 0 to 1, and what is being done. */
   onProgress?: (
     share: number,
-    stage: 'populations' | 'velocities' | 'pairs' | 'estimates' | 'details',
+    part: 'populations' | 'densities' | 'spreading' | 'tails' | 'pairs' | 'estimates',
   ) => void;
 }

@@ -3,9 +3,9 @@ import type { FromChild, TaskInput, TaskName, TaskOutput, ToChild } from './task
 import { composeStrips } from './steps/compose-strips';
 import { assessRehearsal } from './steps/assess-rehearsal';
 import { detectChunk } from './steps/detect-chunk';
-import { inspectStack } from './steps/inspect-stack';
+import { indexStack, inspectStack } from './steps/inspect-stack';
 import { linkTracks } from './steps/link-tracks';
-import { measureFlow } from './steps/measure-flow';
+import { judgeTracks, measureFlow, measureFlowPart } from './steps/measure-flow';
 import { measureImage } from './steps/measure-image';
 import { simulateStack } from './steps/simulate-stack';
 import { refinePoint } from './steps/refine-point';
@@ -15,11 +15,14 @@ import type { WorkContext } from './steps/work-context';
 type Work = { [K in TaskName]: (input: TaskInput<K>, context: WorkContext) => Promise<TaskOutput<K>> };
 
 const WORK: Work = {
+  indexStack,
   inspectStack,
   measureImage,
   detectChunk,
   linkTracks,
   measureFlow,
+  judgeTracks,
+  measureFlowPart,
   tryRecipe,
   composeStrips,
   simulateStack,
@@ -29,6 +32,8 @@ const WORK: Work = {
 
 /** Progress is told so often at most, ms. */
 const TELL_MS = 200;
+
+const MICRO = 1e-6;
 
 /** Web server and database come first on a busy machine: nobody clicks on a computation. */
 const NICE = 5;
@@ -50,9 +55,12 @@ async function serve({ id, task, input }: ToChild): Promise<void> {
     told = now;
     tell({ id, kind: 'progress', share });
   };
+  const before = process.cpuUsage();
   try {
     const work = WORK[task] as (input: unknown, context: WorkContext) => Promise<TaskOutput<TaskName>>;
-    tell({ id, kind: 'done', output: await work(input, { onProgress }) });
+    const output = await work(input, { onProgress });
+    const { user, system } = process.cpuUsage(before);
+    tell({ id, kind: 'done', output, cpuS: MICRO * (user + system) });
   } catch (cause) {
     const { name, message, stack, field } = cause as Error & { field?: string };
     tell({ id, kind: 'failed', error: { name, message, stack, field } });

@@ -8,6 +8,7 @@ interface Current {
   resolve(output: TaskOutput<TaskName>): void;
   reject(error: ComputeError): void;
   onProgress?: (share: number) => void;
+  onCpu?: (cpuS: number) => void;
   alive(): void;
 }
 
@@ -15,6 +16,7 @@ interface ChildRunOptions {
   signal?: AbortSignal;
   timeoutMs: number;
   onProgress?: (share: number) => void;
+  onCpu?: (cpuS: number) => void;
 }
 
 /** What a child may know of the machine; the address of the database and keys are not among it. */
@@ -90,7 +92,7 @@ export class ComputeChild {
   }
 
   run<K extends TaskName>(task: K, input: TaskInput<K>, options: ChildRunOptions): Promise<TaskOutput<K>> {
-    const { signal, timeoutMs, onProgress } = options;
+    const { signal, timeoutMs, onProgress, onCpu } = options;
     return new Promise<TaskOutput<K>>((resolve, reject) => {
       let timer: NodeJS.Timeout | undefined;
       const settle = () => {
@@ -112,6 +114,7 @@ export class ComputeChild {
         resolve: (output) => (settle(), resolve(output as TaskOutput<K>)),
         reject: (error) => (settle(), reject(error)),
         onProgress,
+        onCpu,
         alive: watch,
       };
       signal?.addEventListener('abort', stop, { once: true });
@@ -142,7 +145,10 @@ export class ComputeChild {
     if (!current || message.id !== current.id) return;
     current.alive();
     if (message.kind === 'progress') return current.onProgress?.(message.share);
-    if (message.kind === 'done') return current.resolve(message.output);
+    if (message.kind === 'done') {
+      current.onCpu?.(message.cpuS);
+      return current.resolve(message.output);
+    }
     const { name, message: sentence, stack, field } = message.error;
     const code = name === 'RecipeRangeError' ? 'RECIPE' : 'FAULT';
     const error = new ComputeError(code, sentence, { field });

@@ -11,6 +11,8 @@ export interface RunOptions {
   timeoutMs?: number;
   /** Share done, 0..1. */
   onProgress?: (share: number) => void;
+  /** Told at the end the processor time that the child took, s. */
+  onCpu?: (cpuS: number) => void;
   /** A child that did work with the same key before is preferred: it may still hold what was measured. */
   key?: string;
 }
@@ -54,7 +56,7 @@ export class ComputePool {
   async run<K extends TaskName>(
     task: K,
     input: TaskInput<K>,
-    { signal, timeoutMs = TIMEOUT_MS, onProgress, key }: RunOptions = {},
+    { signal, timeoutMs = TIMEOUT_MS, onProgress, onCpu, key }: RunOptions = {},
   ): Promise<TaskOutput<K>> {
     if (signal?.aborted) throw new ComputeError('STOPPED', 'Stopped.');
     const child = await this.borrow(key, signal);
@@ -62,7 +64,7 @@ export class ComputePool {
       // Called off while it waited: nobody would tell the child any more.
       if (signal?.aborted) throw new ComputeError('STOPPED', 'Stopped.');
       child.lastKey = key;
-      return await child.run(task, input, { signal, timeoutMs, onProgress });
+      return await child.run(task, input, { signal, timeoutMs, onProgress, onCpu });
     } finally {
       this.giveBack(child);
     }

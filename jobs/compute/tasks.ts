@@ -1,13 +1,15 @@
 import type { ImageFacts } from '@/lib/analysis-facts';
 import type { Film } from '@/lib/review/film';
 import type { FilmPathView } from '@/lib/views/review-view';
-import type { StackReport, StackSource } from '@/stacks/stack-report';
+import type { RefusedStack, StackReport, StackSource } from '@/stacks/stack-report';
 import type { StackPlace } from '@/stacks/stack-place';
 import type { RehearsalFound } from '@/tracking/rehearsal/assess-rehearsal';
 import type { RehearsalAssessment } from '@/tracking/rehearsal/assessment';
 import type { RehearsalPlan } from '@/tracking/rehearsal/plan';
 import type { FlowMeasures, ImageSize, KnownPopulations } from '@/tracking/flow-measures';
+import type { FlowInput, FlowPart, FlowPartResults } from '@/tracking/flow-parts';
 import type { PlacedSpot } from '@/tracking/detect';
+import type { TrackPopulations } from '@/tracking/populations/populations';
 import type { Conditions, Recipe, RecipeRequest, Spots, Tracks } from '@/tracking/types';
 
 // What is computed in child processes: plain data in, plain data out, no database, no network.
@@ -25,6 +27,9 @@ export interface InspectInput {
   /** False where nobody will look at pictures. */
   previews: boolean;
 }
+
+/** Frames of a stack that may be read already, or why there are none. */
+export type IndexOutput = { state: 'indexed'; frames: number; width: number; height: number } | RefusedStack;
 
 export interface MeasureImageInput {
   stackDir: StackPlace;
@@ -72,6 +77,9 @@ export interface MeasureFlowInput {
   /** Populations of tracks that stand. */
   known?: KnownPopulations;
 }
+
+/** One part of the flow measures, once the tracks are named. */
+export type MeasureFlowPartInput = FlowInput & { part: FlowPart };
 
 /** Asks for the position of a tracer near a place in one frame. */
 export interface RefinePointInput {
@@ -131,11 +139,14 @@ export interface AssessRehearsalInput extends Omit<RehearsalFound, 'spots'> {
 }
 
 export interface Tasks {
+  indexStack: { input: Pick<InspectInput, 'source' | 'outDir'>; output: IndexOutput };
   inspectStack: { input: InspectInput; output: StackReport };
   measureImage: { input: MeasureImageInput; output: MeasureImageOutput };
   detectChunk: { input: DetectChunkInput; output: DetectChunkOutput };
   linkTracks: { input: LinkTracksInput; output: Tracks };
   measureFlow: { input: MeasureFlowInput; output: FlowMeasures };
+  judgeTracks: { input: MeasureFlowInput; output: TrackPopulations };
+  measureFlowPart: { input: MeasureFlowPartInput; output: FlowPartResults[FlowPart] };
   tryRecipe: { input: TryRecipeInput; output: TryRecipeOutput };
   /** How many were composed. */
   composeStrips: { input: ComposeStripsInput; output: number };
@@ -153,5 +164,5 @@ export type ToChild = { [K in TaskName]: { id: number; task: K; input: TaskInput
 /** From a child to the pool. */
 export type FromChild =
   | { id: number; kind: 'progress'; share: number }
-  | { id: number; kind: 'done'; output: TaskOutput<TaskName> }
+  | { id: number; kind: 'done'; output: TaskOutput<TaskName>; cpuS: number }
   | { id: number; kind: 'failed'; error: { name: string; message: string; stack?: string; field?: string } };

@@ -7,8 +7,10 @@ import type { ComputePool } from '../compute/pool';
 import type { DetectChunkOutput } from '../compute/tasks';
 import { LONG_TIMEOUT_MS } from '../job-timeouts';
 import { InputError } from './local-stack';
+import { measureFlowIn } from './measure-flow-in';
+import { StageClock, type LocalStage } from './stage-clock';
 
-export type LocalStage = 'check' | 'measure-image' | 'detect-spots' | 'link-tracks' | 'measure-flow';
+export type { LocalStage } from './stage-clock';
 
 export interface LocalRequest {
   source: StackSource;
@@ -29,90 +31,102 @@ export interface LocalAnalysis {
   spotsPerFrame: number[];
   tracks: Tracks;
   measures: FlowMeasures;
-  /** Wall-clock time of each stage, s. */
+  /** Wall-clock time of each stage, s; with several children the check runs beside the stages that follow. */
   timingsS: Record<LocalStage, number>;
+  /** Wall-clock time of the whole, s. */
+  wholeS: number;
+  /** Processor time of each piece of work of a stage in the children, s, in the order in which they were asked for. */
+  cpuS: Record<LocalStage, number[]>;
   /** Share of the time of detection that went into reading frames. */
   readingShare: number;
 }
 
 /**
  * A stack from bytes to numbers without server or database, through the same computations as the
- * jobs; detection is spread over the children of the pool.
+ * jobs, spread over the children of the pool. Where there are several, frames are analysed while they
+ * are still being checked; nothing is given out before the check has ended well.
  * @throws InputError for a stack that can't be used, ComputeError for a recipe that can't be run.
  */
 export async function analyseStack(request: LocalRequest, pool: ComputePool): Promise<LocalAnalysis> {
-  const { source, workDir, conditions } = request;
-  const timingsS = {} as Record<LocalStage, number>;
-  const stage = async <T>(
-    name: LocalStage,
-    work: (onProgress: (share: number) => void) => Promise<T>,
-  ): Promise<T> => {
-    const began = performance.now();
-    request.onProgress?.(name, 0);
-    const result = await work((share) => request.onProgress?.(name, share));
-    timingsS[name] = (performance.now() - began) / 1000;
-    request.onProgress?.(name, 1);
-    return result;
-  };
+  const clock = new StageClock(request.onProgress);
+  const { source, workDir } = request;
+  const began = performance.now();
+  clock.begin('check');
+  const indexed = await pool.run(
+    'indexStack',
+    { source, outDir: workDir },
+    { timeoutMs: LONG_TIMEOUT_MS, onCpu: clock.cpuOf('check') },
+  );
+  if (indexed.state === 'refused') throw new InputError(indexed.refusal.detail);
+  const checking = checkStack(request, pool, clock);
+  try {
+    const [stack, analysed] = await Promise.all([checking, analyseFrames(request, indexed, pool, clock)]);
+    const wholeS = (performance.now() - began) / 1000;
+    return { stack, ...analysed, timingsS: clock.timingsS, cpuS: clock.cpuS, wholeS };
+  } catch (cause) {
+    // What is wrong with the stack says more than what went wrong on its frames.
+    await checking;
+    throw cause;
+  }
+}
 
-  const stack = await stage('check', async (onProgress) => {
-    const report = await pool.run(
-      'inspectStack',
-      { source, outDir: workDir, expectedSha256: [], previews: false },
-      { onProgress, timeoutMs: LONG_TIMEOUT_MS },
-    );
-    if (report.state === 'refused') throw new InputError(report.refusal.detail);
-    return report;
-  });
-  const image = { frames: stack.frames, width: stack.width, height: stack.height };
-  const measured = await stage('measure-image', (onProgress) =>
+async function checkStack(
+  { source, workDir }: LocalRequest,
+  pool: ComputePool,
+  clock: StageClock,
+): Promise<ReadyStack> {
+  const report = await pool.run(
+    'inspectStack',
+    { source, outDir: workDir, expectedSha256: [], previews: false },
+    { onProgress: clock.progressOf('check'), timeoutMs: LONG_TIMEOUT_MS, onCpu: clock.cpuOf('check') },
+  );
+  if (report.state === 'refused') throw new InputError(report.refusal.detail);
+  clock.end('check');
+  return report;
+}
+
+async function analyseFrames(
+  { workDir, conditions, recipe: asked, chunkFrames }: LocalRequest,
+  { frames, width, height }: { frames: number; width: number; height: number },
+  pool: ComputePool,
+  clock: StageClock,
+) {
+  const image = { frames, width, height };
+  const { model, recipe, facts } = await clock.time('measure-image', (options) =>
     pool.run(
       'measureImage',
-      { stackDir: workDir, request: request.recipe, pixelSizeM: conditions.pixelSize_m },
-      { onProgress },
+      { stackDir: workDir, request: asked, pixelSizeM: conditions.pixelSize_m },
+      options,
     ),
   );
-  const { model, recipe, facts } = measured;
-
-  const chunkFrames = request.chunkFrames ?? chunkFramesFor(image.frames, image.width, image.height);
-  const found = await stage('detect-spots', (onProgress) => {
-    const chunks = chunksOf(image.frames, chunkFrames);
+  const found = await clock.time('detect-spots', ({ onProgress, onCpu }) => {
+    const chunks = chunksOf(frames, chunkFrames ?? chunkFramesFor(frames, width, height));
     let done = 0;
     return Promise.all(
-      chunks.map(async ({ firstFrame, frames }): Promise<DetectChunkOutput> => {
-        const input = { stackDir: workDir, model, modelKey: workDir, recipe, firstFrame, frames };
-        const result = await pool.run('detectChunk', input, { key: workDir });
-        onProgress((done += frames) / image.frames);
+      chunks.map(async ({ firstFrame, frames: many }): Promise<DetectChunkOutput> => {
+        const input = { stackDir: workDir, model, modelKey: workDir, recipe, firstFrame, frames: many };
+        const result = await pool.run('detectChunk', input, { key: workDir, onCpu });
+        onProgress((done += many) / frames);
         return result;
       }),
     );
   });
-
-  const tracks = await stage('link-tracks', (onProgress) =>
-    pool.run(
-      'linkTracks',
-      { chunks: found.map(({ spots }) => spots), image, recipe },
-      { onProgress, timeoutMs: LONG_TIMEOUT_MS },
-    ),
+  const chunks = found.map(({ spots }) => spots);
+  const tracks = await clock.time('link-tracks', (options) =>
+    pool.run('linkTracks', { chunks, image, recipe }, { ...options, timeoutMs: LONG_TIMEOUT_MS }),
   );
-  const measures = await stage('measure-flow', (onProgress) =>
-    pool.run(
-      'measureFlow',
-      { tracks, image, conditions, recipe },
-      { onProgress, timeoutMs: LONG_TIMEOUT_MS },
-    ),
+  const measures = await clock.time('measure-flow', (options) =>
+    measureFlowIn(pool, { tracks, image, conditions, recipe }, options),
   );
   const sum = (pick: (chunk: DetectChunkOutput) => number) =>
     found.reduce((total, chunk) => total + pick(chunk), 0);
   return {
-    stack,
     recipe,
     facts,
     spots: sum(({ spotCount }) => spotCount),
     spotsPerFrame: found.flatMap(({ spotsPerFrame }) => spotsPerFrame),
     tracks,
     measures,
-    timingsS,
     readingShare: sum(({ readingMs }) => readingMs) / sum(({ tookMs }) => tookMs),
   };
 }

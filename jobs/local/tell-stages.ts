@@ -10,7 +10,8 @@ const WORDS: Record<LocalStage, string> = {
 
 /** On a terminal the share is shown as it grows; in a log a stage is one line, when it is done. */
 export function stageTeller(out: NodeJS.WriteStream) {
-  let began = 0;
+  // Stages may overlap.
+  const began = new Map<LocalStage, number>();
   let shown = '';
   const show = (text: string) => {
     if (!out.isTTY || text === shown) return;
@@ -19,13 +20,14 @@ export function stageTeller(out: NodeJS.WriteStream) {
   };
   return {
     progress(stage: LocalStage, share: number): void {
-      if (share === 0) began = performance.now();
+      if (share === 0) began.set(stage, performance.now());
       if (share < 1) return show(`${WORDS[stage]}: ${Math.floor(100 * share)} %`);
       // Detection itself reports 1 once more than the stage does.
-      if (began === 0) return;
+      const from = began.get(stage);
+      if (from === undefined) return;
       show('');
-      out.write(`${WORDS[stage]}: ${((performance.now() - began) / 1000).toFixed(1)} s\n`);
-      began = 0;
+      out.write(`${WORDS[stage]}: ${((performance.now() - from) / 1000).toFixed(1)} s\n`);
+      began.delete(stage);
     },
     line(text: string): void {
       show('');

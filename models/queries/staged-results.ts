@@ -1,7 +1,14 @@
 import type { Transaction } from 'sequelize';
 import { getSequelize } from '../database';
 
-const RESULT_TABLES = ['candidates', 'analysis_measures', 'track_points', 'tracks', 'spot_chunks'] as const;
+const RESULT_TABLES = [
+  'candidates',
+  'analysis_measures',
+  'flow_parts',
+  'track_points',
+  'tracks',
+  'spot_chunks',
+] as const;
 
 async function emptyTables(tables: readonly string[], analysisId: string, transaction: Transaction) {
   for (const table of tables) {
@@ -19,10 +26,10 @@ export function dropStagedResults(analysisId: string, transaction: Transaction):
 
 /** Removes tracks that an earlier try of linking may have left. */
 export function dropStagedTracks(analysisId: string, transaction: Transaction): Promise<void> {
-  return emptyTables(['track_points', 'tracks'], analysisId, transaction);
+  return emptyTables(['flow_parts', 'track_points', 'tracks'], analysisId, transaction);
 }
 
 /** Removes what an earlier try of measuring may have left. */
 export function dropStagedMeasures(analysisId: string, transaction: Transaction): Promise<void> {
-  return emptyTables(['candidates', 'analysis_measures'], analysisId, transaction);
+  return emptyTables(['candidates', 'analysis_measures', 'flow_parts'], analysisId, transaction);
 }

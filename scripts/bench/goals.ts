@@ -20,10 +20,11 @@ export function speedGoals({ recording, full, quick, plainScript, tunedScript }:
 }
 
 export function workersGoal(one: WorkersRun, two: WorkersRun): string {
-  const { whole, detection } = gainOf(one, two);
+  const { whole, detection, replayed } = gainOf(one, two);
   return (
     `${one.stack.name}: two workers ${whole.toFixed(2)} times one, warm (goal ${GOALS.workersGain} on idle cores, ` +
     `${reached(whole >= GOALS.workersGain)}); detection alone ${detection.toFixed(2)} times; ` +
+    `by processor time, nobody waiting, ${replayed.toFixed(2)} times; ` +
     `load average ${one.load.toFixed(1)} and ${two.load.toFixed(1)}.`
   );
 }

@@ -4,6 +4,7 @@ import { ComputePool } from '@/jobs/compute/pool';
 import { writeTiff } from '@/jobs/write-tiff';
 import { analyseStack, type LocalStage } from '@/jobs/local/analyse-stack';
 import { localStack } from '@/jobs/local/local-stack';
+import { LOCAL_STAGES } from '@/jobs/local/stage-clock';
 import { mixedCamera, mixedScene } from '@/tracking/simulate/mixed-scene';
 import { createRenderer } from '@/tracking/simulate/render';
 import { lookAtChild } from './child-memory';
@@ -13,8 +14,6 @@ import { figure, textTable } from './text-table';
 const RENDERED = 60;
 const SEED = 1;
 const CONDITIONS = { pixelSize_m: 1e-5, frameInterval_s: 5e-3, sheetThickness_m: 1e-4 };
-
-const STAGES = ['check', 'measure-image', 'detect-spots', 'link-tracks', 'measure-flow'] as const;
 
 /** How far a computing process's resident memory went above what it had after its start, MB. */
 export interface MemoryRun {
@@ -89,7 +88,10 @@ export function memoryTable(runs: readonly MemoryRun[]): string {
     ['memory of one process, MB', ...runs.map(({ frames }) => `${figure(frames)} frames`)],
     ['stack', ...runs.map(({ stackMB }) => figure(stackMB))],
     ['after its start', ...runs.map(({ startMB }) => figure(startMB))],
-    ...STAGES.map((stage) => [`growth, ${stage}`, ...runs.map(({ growthMB }) => figure(growthMB[stage]))]),
+    ...LOCAL_STAGES.map((stage) => [
+      `growth, ${stage}`,
+      ...runs.map(({ growthMB }) => figure(growthMB[stage])),
+    ]),
     ['growth, most', ...runs.map((run) => figure(mostGrowth(run)))],
   ]);
 }

@@ -5,6 +5,7 @@ import { ComputePool } from '@/jobs/compute/pool';
 import { analyseStack, type LocalAnalysis, type LocalStage } from '@/jobs/local/analyse-stack';
 import { localStack } from '@/jobs/local/local-stack';
 import type { Conditions } from '@/tracking/types';
+import { replayedSeconds } from './replay';
 import { figure, textTable } from './text-table';
 
 /** A stack to analyse from bytes to numbers. */
@@ -45,7 +46,7 @@ export async function runWorkers(
     let warm = await round('warm');
     for (let i = 1; i < WARM_ROUNDS; i++) {
       const again = await round(`warm-${i}`);
-      if (wholeSeconds(again) < wholeSeconds(warm)) warm = again;
+      if (again.wholeS < warm.wholeS) warm = again;
     }
     return { stack, workers, cold, warm, load: loadavg()[0] };
   } finally {
@@ -53,18 +54,21 @@ export async function runWorkers(
   }
 }
 
-/** Wall-clock time of all stages, s. */
-export const wholeSeconds = ({ timingsS }: LocalAnalysis): number =>
-  Object.values(timingsS).reduce((sum, seconds) => sum + seconds, 0);
-
-/** How many times as fast the second is as the first, warm: all of it, and detection alone. */
+/** How many times as fast the second is as the first, warm: all of it, detection alone, and all of it as replayed. */
 export function gainOf(one: WorkersRun, two: WorkersRun) {
   const detection = ({ warm }: WorkersRun) => warm.timingsS['detect-spots'];
   return {
-    whole: wholeSeconds(one.warm) / wholeSeconds(two.warm),
+    whole: one.warm.wholeS / two.warm.wholeS,
     detection: detection(one) / detection(two),
+    // One worker's pieces: what two at a time cost each other belongs to the clock on the wall.
+    replayed: replayedSeconds(one.warm, one.workers) / replayedSeconds(one.warm, two.workers),
   };
 }
+
+const cpuSeconds = ({ cpuS }: LocalAnalysis): number =>
+  Object.values(cpuS)
+    .flat()
+    .reduce((sum, seconds) => sum + seconds, 0);
 
 /** The product's own processes by the clock on the wall. */
 export function workersTable(runs: readonly WorkersRun[]): string {
@@ -85,8 +89,9 @@ export function workersTable(runs: readonly WorkersRun[]): string {
     seconds('detection, s', 'detect-spots'),
     seconds('linking, s', 'link-tracks'),
     seconds('measure flow, s', 'measure-flow'),
-    row('whole, s', ({ analysis }) => wholeSeconds(analysis)),
-    row('whole, Mpx/s', ({ analysis, stack }) => stack.megapixels / wholeSeconds(analysis)),
+    row('whole, s', ({ analysis }) => analysis.wholeS),
+    row('processor time, s', ({ analysis }) => cpuSeconds(analysis)),
+    row('whole, Mpx/s', ({ analysis, stack }) => stack.megapixels / analysis.wholeS),
     row('share of reading in detection', ({ analysis }) => analysis.readingShare),
   ]);
 }

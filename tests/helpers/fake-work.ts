@@ -1,7 +1,7 @@
 import { z } from 'zod';
 import type { JobContext, JobHandler } from '@/jobs/job-context';
 import { defineJob, type JobDefinition } from '@/jobs/job-definition';
-import { enqueueJob } from '@/jobs/queue';
+import { enqueueJob, enqueueJobs } from '@/jobs/queue';
 import { getSequelize } from '@/models/database';
 import { models } from '@/models';
 import { failAnalysis } from '@/models/queries/analysis-progress';
@@ -37,6 +37,22 @@ export async function askForFakeWork(
   );
   if (!jobId) throw new Error('The work was there already.');
   return jobId;
+}
+
+/** Asks for many pieces of the made-up work at once, with one bell for all. @returns the rows' ids */
+export async function askForFakeWorks(
+  { id, labId }: { id: string; labId: string },
+  pieces: number,
+): Promise<string[]> {
+  const requests = Array.from({ length: pieces }, (_, chunk) => ({
+    labId,
+    subjectId: id,
+    chunk,
+    payload: {},
+  }));
+  await getSequelize().transaction((transaction) => enqueueJobs(fakeJob, requests, transaction));
+  const rows = await models().JobRun.findAll({ where: { subjectId: id, kind: fakeJob.kind } });
+  return rows.map((row) => row.id);
 }
 
 export async function jobRow(id: string): Promise<JobRun> {

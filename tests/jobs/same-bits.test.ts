@@ -7,6 +7,10 @@ import { kernelsOfThisProcess } from '@/jobs/compute/kernels';
 import { ComputePool } from '@/jobs/compute/pool';
 import { makeDemoStack } from '@/jobs/demo/make-demo-stack';
 import { localStack } from '@/jobs/local/local-stack';
+import { measureFlowIn } from '@/jobs/local/measure-flow-in';
+import { decodeFlowParts, decodePopulations, encodeFlowPart } from '@/jobs/flow-part-bytes';
+import { FLOW_PARTS, measureFlowPart } from '@/tracking/flow-parts';
+import { judgeTracks, measureFlow } from '@/tracking/measure-flow';
 import { openStack } from '@/stacks/open-stack';
 import { createDetector } from '@/tracking/detect';
 import { linkSpots } from '@/tracking/link';
@@ -101,6 +105,36 @@ test.each([1, 2, 4])(
   },
   3 * MINUTES,
 );
+
+test.each([1, 2, 4])(
+  'with %d workers the parts of the flow measures are together what one process measures',
+  async (workers) => {
+    const { recipe } = await prepare();
+    const input = { tracks: expected.tracks, image: IMAGE, conditions: CONDITIONS, recipe };
+    const shares: number[] = [];
+    const onProgress = (share: number) => void shares.push(share);
+    const measured = await measureFlowIn(poolOf(workers), input, { onProgress, onCpu: () => undefined });
+    expect(measured).toEqual(measureFlow(expected.tracks, IMAGE, CONDITIONS, recipe));
+    expect(shares.at(-1)).toBe(1);
+    expect(measured.tracks.population).toHaveLength(expected.tracks.count);
+  },
+  3 * MINUTES,
+);
+
+test('parts that wait in the database keep their bits, and a missing one is told by name', async () => {
+  const { recipe } = await prepare();
+  const { tracks } = expected;
+  const found = judgeTracks(tracks, IMAGE, CONDITIONS, recipe);
+  const input = { tracks, image: IMAGE, conditions: CONDITIONS, recipe, found };
+  const parts = FLOW_PARTS.map((part) => [part, measureFlowPart(part, input)] as const);
+  const stored = [['populations', found] as const, ...parts].map(([part, result]) => ({
+    part,
+    result: encodeFlowPart(result),
+  }));
+  expect(decodePopulations(stored[0].result)).toEqual(found);
+  expect(decodeFlowParts(stored)).toEqual({ found, parts: Object.fromEntries(parts) });
+  expect(() => decodeFlowParts(stored.slice(0, -1))).toThrow('missing: estimates');
+});
 
 test('the detector finds the same bits in a frame whatever frames it saw before', async () => {
   const { all, detector } = await prepare();

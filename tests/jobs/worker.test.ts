@@ -6,9 +6,10 @@ import { startWorker, type RunningWorker, type WorkerTimes } from '@/jobs/worker
 import { getSequelize } from '@/models/database';
 import { models } from '@/models';
 import type { Analysis } from '@/models/analysis';
+import { selectRows } from '@/models/queries/select';
 import { liveWorkers } from '@/models/queries/workers';
 import { saveSpotChunk } from '@/models/queries/spot-chunks';
-import { askForFakeWork, fakeHandlers, jobRow } from '../helpers/fake-work';
+import { askForFakeWork, askForFakeWorks, fakeHandlers, jobRow } from '../helpers/fake-work';
 import { freshDatabase, type FreshDatabase } from '../helpers/fresh-database';
 import { makeAnalysis, makeLab, type LabRows } from '../helpers/lab-rows';
 import { until } from '../helpers/until';
@@ -46,7 +47,43 @@ async function work(run: Run, times: Partial<WorkerTimes> = FAST): Promise<Runni
 const endless: Run = ({ signal }) =>
   new Promise((_, reject) => signal.addEventListener('abort', () => reject(new Error('called off'))));
 
+/** Workers of this database that wait to be called. */
+const listening = async () => {
+  const rows = await selectRows<{ n: number }>(
+    `SELECT count(*)::int AS n FROM pg_stat_activity
+     WHERE datname = current_database() AND application_name = 'beadline wake-up' AND query LIKE 'LISTEN%'`,
+  );
+  return rows[0].n;
+};
+
 const stateOf = async (jobId: string) => (await jobRow(jobId)).state;
+
+test('all idle workers are called at once, though one bell rings for many pieces and none of them looks by itself', async () => {
+  const slow = { ...FAST, pollMs: 60_000, sweepMs: 60_000 };
+  const busy = new Set<string>();
+  let both: () => void = () => undefined;
+  const together = new Promise<void>((resolve) => (both = resolve));
+  // Each holds its piece until the other has one too: a single worker would hold its own for ever.
+  const run: Run = async ({ claim, commit }) => {
+    busy.add(claim.workerId);
+    if (busy.size === 2) both();
+    await together;
+    await commit(async () => undefined);
+  };
+  await work(run, slow);
+  await work(run, slow);
+  await until(
+    () => listening(),
+    (count) => count === 2,
+  );
+  const ids = await askForFakeWorks(analysis, 2);
+  for (const id of ids) {
+    await until(
+      () => stateOf(id),
+      (state) => state === 'done',
+    );
+  }
+});
 
 test('work that is asked for while a worker idles is begun at once by its bell, and the bell is removed', async () => {
   await work(({ commit }) => commit(async () => undefined), { ...FAST, sweepMs: 60_000 });

@@ -52,7 +52,7 @@ test('measures populations, distributions, pairs and estimates, the same for the
   const onProgress = (share: number, stage: string) => stages.push(`${share} ${stage}`);
   const measured = measureFlow(tracks, IMAGE, CONDITIONS, RECIPE, { onProgress });
   expect(stages[0]).toBe('0 populations');
-  expect(stages.at(-1)).toBe('1 details');
+  expect(stages.at(-1)).toBe('1 estimates');
   const { counts } = measured.populations;
   expect(counts.trapped + counts.free + counts.undecided).toBe(tracks.count);
   expect(measured.tracks.population.length).toBe(tracks.count);

@@ -19,16 +19,17 @@ export function createNoiseMeter(frames: number): NoiseMeter {
   let previous: Float32Array | null = null;
   return {
     add(frame, counts) {
+      const isSecond = previous !== null && firsts.has(frame - 1);
+      const isFirst = firsts.has(frame);
+      if (!isFirst && !isSecond) return;
       const step = Math.max(1, Math.floor(counts.length / PIXELS_MAX));
-      const picked = Float32Array.from(
-        { length: Math.floor(counts.length / step) },
-        (_, i) => counts[i * step]!,
-      );
-      if (previous && firsts.has(frame - 1)) {
+      const picked = new Float32Array(Math.floor(counts.length / step));
+      for (let i = 0; i < picked.length; i++) picked[i] = counts[i * step]!;
+      if (isSecond) {
         const differences = picked.map((value, i) => value - previous![i]!);
         deviations.push(clippedDeviation(differences) / Math.SQRT2);
       }
-      previous = firsts.has(frame) ? picked : null;
+      previous = isFirst ? picked : null;
     },
     result() {
       if (deviations.length === 0) return null;

@@ -16,16 +16,24 @@ const TRIED = 60;
 /** A tail is the smaller part: beginnings below this share of the samples are its body. */
 const TAIL_SHARE_MOST = 0.5;
 
+/** How many of so many samples can make a tail at most. */
+export const mostInTail = (samples: number): number => Math.floor(TAIL_SHARE_MOST * samples);
+
 /**
  * Power-law tail by maximum likelihood, alpha = 1 + n / sum ln(v / from), beginning where data and law
  * are closest (Clauset, Shalizi & Newman, SIAM Rev. 51, 661, 2009).
  *
- * @param sizeMS descending.
+ * @param sizeMS descending; sizes beyond the larger half, or below `leastMS`, may be left out.
+ * @param of how many samples they are the largest.
  * @param leastMS the tail may not begin below it, so that noise can't make it.
  * @returns null with fewer than 100 samples above that.
  */
-export function fitPowerLawTail(sizeMS: Float64Array, leastMS: number): PowerLawTail | null {
-  let most = Math.floor(TAIL_SHARE_MOST * sizeMS.length);
+export function fitPowerLawTail(
+  sizeMS: Float64Array,
+  leastMS: number,
+  of = sizeMS.length,
+): PowerLawTail | null {
+  let most = Math.min(sizeMS.length, mostInTail(of));
   while (most > 0 && sizeMS[most - 1] < leastMS) most--;
   if (most < TAIL_SAMPLES_LEAST) return null;
   // Sums of logarithms from the largest on: every beginning is then a subtraction away.

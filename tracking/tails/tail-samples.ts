@@ -1,41 +1,84 @@
-import type { LagSamples } from '../velocity-pdfs/component-samples';
+import { orderStatistics } from '../order-statistics';
+import type { ComponentReader } from '../velocity-pdfs/component-samples';
+import { mostInTail, TAIL_SAMPLES_LEAST } from './power-law-tail';
 
-/** Sizes of velocity of one population, largest first, and the tracks that they come from. */
+/** The largest sizes of velocity of one population, and the tracks that they come from. */
 export interface TailSamples {
-  /** Descending, m/s. */
+  /** Samples in all, of which those that can't be in a tail are left out. */
+  samples: number;
+  /** Descending, m/s; of equal ones that of the first track comes first. */
   sizeMS: Float64Array;
   track: Uint32Array;
 }
 
 /**
- * Sizes of a velocity component about its median over the tracks taken. Only displacements that do not
- * overlap are kept: those that do tell the same twice.
+ * Sizes of a velocity component about its median over the tracks taken, as far as a tail may hold them: the larger
+ * half, not below `floorMS`. Only displacements that do not overlap are looked at: those that do tell the same twice.
  *
- * @param values one component of every sample, m/s.
  * @param centred false where the size itself is the quantity, as for the speed.
  */
 export function tailSamples(
-  samples: LagSamples,
-  values: Float64Array,
+  reader: ComponentReader,
+  tracks: number,
   lagFrames: number,
   takes: (track: number) => boolean,
   centred: boolean,
+  floorMS: number,
 ): TailSamples {
-  const kept: number[] = [];
-  const owner: number[] = [];
-  for (let i = 0; i + 1 < samples.start.length; i++) {
-    if (!takes(i)) continue;
-    for (let k = samples.start[i]; k < samples.start[i + 1]; k += lagFrames) {
-      kept.push(values[k]);
-      owner.push(i);
+  const each = (visit: (value: number, track: number) => void) => {
+    for (let i = 0; i < tracks; i++) {
+      if (!takes(i)) continue;
+      const n = reader.read(i);
+      for (let k = 0; k < n; k += lagFrames) visit(reader.values[k], i);
     }
-  }
-  const sorted = Float64Array.from(kept).sort();
-  const middle = centred && sorted.length > 0 ? sorted[sorted.length >> 1] : 0;
-  const size = Float64Array.from(kept, (value) => Math.abs(value - middle));
-  const order = Uint32Array.from(kept.keys()).sort((a, b) => size[b] - size[a]);
-  return {
-    sizeMS: Float64Array.from(order, (k) => size[k]),
-    track: Uint32Array.from(order, (k) => owner[k]),
   };
+  let samples = 0;
+  each(() => samples++);
+  const none = { samples, sizeMS: new Float64Array(0), track: new Uint32Array(0) };
+  const most = mostInTail(samples);
+  if (most < TAIL_SAMPLES_LEAST) return none;
+  const middle = centred ? orderStatistics(each, [samples >> 1])[0] : 0;
+  const count = (leastMS: number) => {
+    let found = 0;
+    each((value) => void (Math.abs(value - middle) >= leastMS && found++));
+    return found;
+  };
+  let leastMS = floorMS;
+  let found = count(leastMS);
+  if (found > most) {
+    const eachSize = (visit: (size: number) => void) => each((value) => visit(Math.abs(value - middle)));
+    [leastMS] = orderStatistics(eachSize, [samples - most]);
+    found = count(leastMS);
+  }
+  if (found < TAIL_SAMPLES_LEAST) return none;
+  const size = new Float64Array(found);
+  const owner = new Uint32Array(found);
+  let at = 0;
+  each((value, track) => {
+    const one = Math.abs(value - middle);
+    if (!(one >= leastMS)) return;
+    size[at] = one;
+    owner[at++] = track;
+  });
+  return { samples, ...descending(size, owner) };
+}
+
+/** Sizes from the largest on with their owners; equal ones keep their order. `size` is used up. */
+function descending(size: Float64Array, owner: Uint32Array): Pick<TailSamples, 'sizeMS' | 'track'> {
+  const n = size.length;
+  const sizeMS = size.slice().sort().reverse();
+  const track = new Uint32Array(n);
+  /** How many of those that are equal have their place already, by the first of their places. */
+  const placed = new Uint32Array(n);
+  for (let k = 0; k < n; k++) {
+    let low = 0;
+    let high = n - 1;
+    while (low < high) {
+      const middle = (low + high) >> 1;
+      if (sizeMS[middle] > size[k]) low = middle + 1;
+      else high = middle;
+    }
+    track[low + placed[low]++] = owner[k];
+  }
+  return { sizeMS, track };
 }

@@ -1,5 +1,5 @@
 import { Z95 } from '../normal-tail';
-import { componentNoise, componentOf, lagSamples, type LagSamples } from '../velocity-pdfs/component-samples';
+import { ComponentReader, countSamples, someNoise } from '../velocity-pdfs/component-samples';
 import type { PdfPopulation, VelocityComponent } from '../velocity-pdf-shape';
 import { POPULATIONS, type Conditions, type Recipe, type Tracks } from '../types';
 import { unitFlow } from '../velocities';
@@ -56,24 +56,27 @@ export function velocityTails(
   const direction = unitFlow(conditions);
   const components: VelocityComponent[] = direction ? ['along', 'across', 'speed'] : ['x', 'y', 'speed'];
   const tails: VelocityTail[] = [];
+  const readerOf = (lagFrames: number, component: VelocityComponent) =>
+    new ComponentReader(tracks, lagFrames, conditions, component, direction ?? [1, 0]);
   for (const lagFrames of recipe.lagsFrames) {
-    const samples = lagSamples(tracks, lagFrames, conditions);
-    if (samples.vxMS.length === 0) continue;
+    const speeds = readerOf(lagFrames, 'speed');
+    const all = countSamples(speeds, tracks.count);
+    if (all === 0) continue;
     const lagS = lagFrames * conditions.frameInterval_s;
     for (const component of components) {
-      const values = componentOf(samples, component, direction ?? [1, 0]);
-      const floor = NOISE_WIDTHS * noiseWidth(samples, component, direction ?? [1, 0]);
+      const reader = readerOf(lagFrames, component);
+      const floor = NOISE_WIDTHS * noiseWidth(someNoise(reader, tracks.count, all, NOISE_SAMPLES));
       [...POPULATIONS, 'all' as const].forEach((name, code) => {
         const takes = (track: number) => name === 'all' || population[track] === code;
-        const sizes = tailSamples(samples, values, lagFrames, takes, component !== 'speed');
-        if (sizes.sizeMS.length === 0) return;
+        const sizes = tailSamples(reader, tracks.count, lagFrames, takes, component !== 'speed', floor);
+        if (sizes.samples === 0) return;
         tails.push({
           population: name,
           component,
           lagFrames,
           lagS,
-          samples: sizes.sizeMS.length,
-          meanPathM: meanSpeed(samples, takes) * lagS,
+          samples: sizes.samples,
+          meanPathM: meanSpeed(speeds, tracks.count, takes) * lagS,
           noiseFloorMS: floor,
           ...describe(sizes, floor),
         });
@@ -98,7 +101,7 @@ type Described = Pick<
 
 function describe(sizes: TailSamples, floorMS: number): Described {
   const { sizeMS, track } = sizes;
-  const tail = fitPowerLawTail(sizeMS, floorMS);
+  const tail = fitPowerLawTail(sizeMS, floorMS, sizes.samples);
   if (!tail) {
     return {
       tailSamples: 0,
@@ -141,29 +144,19 @@ function judge(
   return wide && fits && gaussian.pEqual < DOUBT ? 'power law' : 'the data cannot tell';
 }
 
-function noiseWidth(
-  samples: LagSamples,
-  component: VelocityComponent,
-  flow: readonly [number, number],
-): number {
-  const step = Math.max(1, Math.floor(samples.vxMS.length / NOISE_SAMPLES));
+function noiseWidth(variances: readonly number[]): number {
   let sum = 0;
-  let count = 0;
-  for (let i = 0; i < samples.vxMS.length; i += step) {
-    const variance = componentNoise(samples, component, flow, i);
-    if (!Number.isFinite(variance)) continue;
-    sum += variance;
-    count++;
-  }
-  return count > 0 ? Math.sqrt(sum / count) : 0;
+  for (const variance of variances) sum += variance;
+  return variances.length > 0 ? Math.sqrt(sum / variances.length) : 0;
 }
 
-function meanSpeed({ start, vxMS, vyMS }: LagSamples, takes: (track: number) => boolean): number {
+function meanSpeed(reader: ComponentReader, tracks: number, takes: (track: number) => boolean): number {
   let sum = 0;
   let count = 0;
-  for (let i = 0; i + 1 < start.length; i++) {
+  for (let i = 0; i < tracks; i++) {
     if (!takes(i)) continue;
-    for (let k = start[i]; k < start[i + 1]; k++, count++) sum += Math.hypot(vxMS[k], vyMS[k]);
+    const n = reader.read(i);
+    for (let k = 0; k < n; k++, count++) sum += reader.values[k];
   }
   return sum / count;
 }

@@ -1,6 +1,7 @@
 import { excessKurtosis } from '../populations/transverse-kurtosis';
 import type { VelocityPdf } from '../velocity-pdf-shape';
 import { bootstrapBand } from './bootstrap-band';
+import type { ComponentReader } from './component-samples';
 import { binOf } from './pdf-bins';
 
 /** Samples of one component at one lag, and whose they are. */
@@ -8,11 +9,7 @@ export interface HistogramInput {
   tracks: number;
   /** Whether a track belongs to the population. */
   takes: (track: number) => boolean;
-  /** Samples of track i are `start[i] .. start[i + 1] - 1`. */
-  start: Uint32Array;
-  values: Float64Array;
-  /** Noise variance of a sample, (m/s)^2. */
-  noise: (sample: number) => number;
+  reader: ComponentReader;
   edges: readonly number[];
   /** Number of packs of tracks, the pack of a track, and the multiplicities of packs per draw. */
   packs: number;
@@ -24,7 +21,7 @@ export interface HistogramInput {
 export function histogram(
   input: HistogramInput,
 ): Omit<VelocityPdf, 'population' | 'component' | 'lagFrames' | 'lagS'> | null {
-  const { start, values, edges, packs } = input;
+  const { reader, edges, packs } = input;
   const bins = edges.length - 1;
   const widths = Array.from({ length: bins }, (_, b) => edges[b + 1] - edges[b]);
   const counts = new Float64Array(packs * bins);
@@ -32,13 +29,15 @@ export function histogram(
   let noise = 0;
   let tracks = 0;
   for (let i = 0; i < input.tracks; i++) {
-    if (start[i] === start[i + 1] || !input.takes(i)) continue;
-    tracks++;
-    for (let k = start[i]; k < start[i + 1]; k++) {
-      counts[input.pack[i] * bins + binOf(edges, values[k])]++;
+    if (!input.takes(i)) continue;
+    const samples = reader.read(i, true);
+    if (samples > 0) tracks++;
+    for (let k = 0; k < samples; k++) {
+      const value = reader.values[k];
+      counts[input.pack[i] * bins + binOf(edges, value)]++;
       // In mm/s, so that fourth powers stay of order one.
-      for (let m = 0, power = 1; m < 5; m++, power *= 1e3 * values[k]) sums[m] += power;
-      noise += input.noise(k);
+      for (let m = 0, power = 1; m < 5; m++, power *= 1e3 * value) sums[m] += power;
+      noise += reader.noise[k];
     }
   }
   const n = sums[0];

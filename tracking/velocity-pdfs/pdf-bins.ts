@@ -5,6 +5,9 @@ const CORE_WIDTHS = 4;
 const GROWTH = 1.2;
 const BINS_MAX = 400;
 
+/** Of the sorted samples only the ends and these quantiles are looked at. */
+export const EDGE_QUANTILES = [0.25, 0.5, 0.75] as const;
+
 /**
  * Bin edges for samples of one velocity component, m/s: Freedman & Diaconis (1981) widths in the
  * core, but never narrower than the localization noise, growing by a fifth per bin in the tails.
@@ -13,7 +16,7 @@ const BINS_MAX = 400;
  * @param sorted all samples, ascending, at least one.
  * @param noiseMS standard deviation that localization alone gives; 0 or NaN where unknown.
  */
-export function pdfEdges(sorted: Float64Array, noiseMS: number): number[] {
+export function pdfEdges(sorted: ArrayLike<number>, noiseMS: number): number[] {
   const n = sorted.length;
   const least = sorted[0];
   const most = sorted[n - 1];

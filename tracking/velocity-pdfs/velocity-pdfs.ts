@@ -1,11 +1,12 @@
+import { orderStatistics } from '../order-statistics';
 import { createRandom, mixSeed } from '../random';
 import { packTracks } from '../resampling/packs';
 import { POPULATIONS, type Conditions, type Recipe, type Tracks } from '../types';
 import type { PdfPopulation, VelocityComponent, VelocityPdf } from '../velocity-pdf-shape';
 import { unitFlow } from '../velocities';
-import { componentNoise, componentOf, lagSamples, type LagSamples } from './component-samples';
+import { ComponentReader, countSamples, someNoise } from './component-samples';
 import { histogram } from './histogram';
-import { pdfEdges } from './pdf-bins';
+import { EDGE_QUANTILES, pdfEdges } from './pdf-bins';
 
 const PDF_POPULATIONS: readonly PdfPopulation[] = [...POPULATIONS, 'all'];
 /** Noise is looked up on about this many samples to set the width of bins. */
@@ -30,30 +31,20 @@ export function velocityPdfs(
     ? ['x', 'y', 'along', 'across', 'speed']
     : ['x', 'y', 'speed'];
   const random = createRandom(mixSeed(recipe.seed, 21));
-  const { packs, pack, weights } = packTracks(random, tracks.count, recipe.bootstrapDraws);
+  const packs = packTracks(random, tracks.count, recipe.bootstrapDraws);
   const pdfs: VelocityPdf[] = [];
   recipe.lagsFrames.forEach((lagFrames, place) => {
     onLag(place, recipe.lagsFrames.length);
-    const samples = lagSamples(tracks, lagFrames, conditions);
-    if (samples.vxMS.length === 0) return;
+    const lagS = lagFrames * conditions.frameInterval_s;
     for (const component of components) {
-      const values = componentOf(samples, component, flow);
-      const edges = pdfEdges(values.slice().sort(), typicalNoise(samples, component, flow));
-      const noise = (i: number) => componentNoise(samples, component, flow, i);
+      const reader = new ComponentReader(tracks, lagFrames, conditions, component, flow);
+      const samples = countSamples(reader, tracks.count);
+      if (samples === 0) return;
+      const noise = typicalNoise(someNoise(reader, tracks.count, samples, NOISE_SAMPLES));
+      const edges = pdfEdges(sortedWhereAsked(reader, tracks.count, samples), noise);
       PDF_POPULATIONS.forEach((name, code) => {
         const takes = (track: number) => name === 'all' || population[track] === code;
-        const pdf = histogram({
-          tracks: tracks.count,
-          takes,
-          start: samples.start,
-          values,
-          noise,
-          edges,
-          packs,
-          pack,
-          weights,
-        });
-        const lagS = lagFrames * conditions.frameInterval_s;
+        const pdf = histogram({ tracks: tracks.count, takes, reader, edges, ...packs });
         if (pdf) pdfs.push({ population: name, component, lagFrames, lagS, ...pdf });
       });
     }
@@ -61,17 +52,22 @@ export function velocityPdfs(
   return pdfs;
 }
 
-function typicalNoise(
-  samples: LagSamples,
-  component: VelocityComponent,
-  flow: readonly [number, number],
-): number {
-  const step = Math.max(1, Math.floor(samples.vxMS.length / NOISE_SAMPLES));
-  const noise: number[] = [];
-  for (let i = 0; i < samples.vxMS.length; i += step) {
-    const value = componentNoise(samples, component, flow, i);
-    if (Number.isFinite(value)) noise.push(value);
-  }
-  noise.sort((a, b) => a - b);
-  return noise.length > 0 ? Math.sqrt(noise[noise.length >> 1]) : 0;
+/** All samples sorted, of which only those are there that bins are made from. */
+function sortedWhereAsked(reader: ComponentReader, tracks: number, samples: number): ArrayLike<number> {
+  const last = samples - 1;
+  const near = EDGE_QUANTILES.map((p) => Math.floor(last * p));
+  const places = [...new Set([0, last, ...near, ...near.map((place) => Math.min(last, place + 1))])];
+  const found = orderStatistics((visit) => {
+    for (let i = 0; i < tracks; i++) {
+      const n = reader.read(i);
+      for (let k = 0; k < n; k++) visit(reader.values[k]);
+    }
+  }, places);
+  return Object.assign({ length: samples }, Object.fromEntries(places.map((place, k) => [place, found[k]])));
+}
+
+/** Median of the standard deviations. */
+function typicalNoise(variances: number[]): number {
+  variances.sort((a, b) => a - b);
+  return variances.length > 0 ? Math.sqrt(variances[variances.length >> 1]) : 0;
 }

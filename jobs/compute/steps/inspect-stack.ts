@@ -1,8 +1,9 @@
 import { inspectStack as inspect } from '@/stacks/inspect-stack';
+import { indexPages } from '@/stacks/prepare-stack';
 import type { InspectProgress, StackReport } from '@/stacks/stack-report';
 import { refusedReport } from '@/stacks/refused-report';
 import { StackRefusal } from '@/stacks/refusal';
-import type { InspectInput } from '../tasks';
+import type { IndexOutput, InspectInput } from '../tasks';
 import { checkSha256 } from './check-sha256';
 import { makePreviews } from './make-previews';
 import type { WorkContext } from './work-context';
@@ -30,4 +31,17 @@ export async function inspectStack(input: InspectInput, { onProgress }: WorkCont
     await makePreviews(outDir, { contrast: report.imageQuality.contrast, pixelSizeM, frameIntervalS });
   }
   return report;
+}
+
+/** Only the page list: enough to read frames by, while another process checks them. */
+export async function indexStack({
+  source,
+  outDir,
+}: Pick<InspectInput, 'source' | 'outDir'>): Promise<IndexOutput> {
+  try {
+    return { state: 'indexed', ...(await indexPages(source, outDir, {})) };
+  } catch (cause) {
+    if (cause instanceof StackRefusal) return refusedReport(cause);
+    throw cause;
+  }
 }

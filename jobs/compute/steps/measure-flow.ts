@@ -1,6 +1,8 @@
 import type { FlowMeasures } from '@/tracking/flow-measures';
-import { measureFlow as measure } from '@/tracking/measure-flow';
-import type { MeasureFlowInput } from '../tasks';
+import { measureFlowPart as measurePart, type FlowPart, type FlowPartResults } from '@/tracking/flow-parts';
+import { judgeTracks as judge, measureFlow as measure } from '@/tracking/measure-flow';
+import type { TrackPopulations } from '@/tracking/populations/populations';
+import type { MeasureFlowInput, MeasureFlowPartInput } from '../tasks';
 import type { WorkContext } from './work-context';
 
 /** Populations, velocities, reconnections and estimates of a recording's tracks. */
@@ -12,4 +14,17 @@ export async function measureFlow(
     known: input.known,
     onProgress: (share) => onProgress(share),
   });
+}
+
+/** Populations alone: what every part of the flow measures goes on from. */
+export async function judgeTracks(input: MeasureFlowInput): Promise<TrackPopulations> {
+  return judge(input.tracks, input.image, input.conditions, input.recipe, input.known);
+}
+
+/** One part of the flow measures; several processes may have one each. */
+export async function measureFlowPart({
+  part,
+  ...input
+}: MeasureFlowPartInput): Promise<FlowPartResults[FlowPart]> {
+  return measurePart(part, input);
 }
