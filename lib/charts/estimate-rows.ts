@@ -39,6 +39,7 @@ export const methodName = (method: string): string => METHOD_NAMES[method] ?? me
 
 /** What a value was counted from: the first of these inputs that it has. */
 const COUNTED: readonly [input: string, words: string][] = [
+  ['pairsOnOneLinePerFrame', 'pairs a frame'],
   ['pairsOnOneLine', 'pairs'],
   ['linesPerFrame', 'lines a frame'],
   ['tracks', 'tracks'],

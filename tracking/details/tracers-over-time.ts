@@ -1,10 +1,6 @@
 import type { EstimateContext } from '../estimates/context';
-import {
-  densityFromTransverse,
-  NOISE_PART_MAX,
-  transverseMotion,
-  TRIMMED_VARIANCE,
-} from '../estimates/line-velocity';
+import { transverseMotion, TRIMMED_VARIANCE } from '../estimates/line-motion';
+import { densityFromTransverse, NOISE_PART_MAX } from '../estimates/line-velocity';
 import { Z95 } from '../normal-tail';
 import { FREE, TRAPPED } from '../populations/codes';
 import { ClusteredRatios } from '../resampling/clustered-ratios';
@@ -132,10 +128,11 @@ function byVelocity(context: EstimateContext, windows: TimeWindows): DensitySeri
   for (let g = 0; g < groups.lines; g++) sums.add(square, count, g * columns);
   const points = Array.from({ length: columns }, (_, w) => {
     const { value, error, low, high } = sums.ratio(w);
-    const variance = value / TRIMMED_VARIANCE - motion.noise;
+    const withoutLag = (of: number) => (of / TRIMMED_VARIANCE - motion.noise) * motion.withoutLag;
+    const variance = withoutLag(value);
     // Where noise may be all there is, a window has no density.
     if (!Number.isFinite(error) || low === null || high === null || !(variance > 0)) return UNKNOWN;
-    const at = (of: number) => finite(densityFromTransverse(of / TRIMMED_VARIANCE - motion.noise));
+    const at = (of: number) => finite(densityFromTransverse(withoutLag(of)));
     return { value: at(value), low: at(low) ?? 0, high: at(high) };
   });
   return {

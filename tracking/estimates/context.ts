@@ -1,21 +1,29 @@
 import type { Conditions, Recipe, Tracks } from '../types';
-import type { Fellows } from './fellows';
+import type { FoundFellows } from './find-fellows';
 import type { LineGroups } from './line-groups';
 import type { NearestLines } from './nearest-lines';
 import type { TrappedPool } from './trapped-pool';
 
 /** What the methods that look at trapped tracers share. */
-export interface EstimateContext {
+export interface EstimateContext extends FoundFellows {
   tracks: Tracks;
   image: { width: number; height: number; frames: number };
   conditions: Conditions;
   recipe: Recipe;
   pool: TrappedPool;
   groups: LineGroups;
-  fellows: Fellows | null;
   nearest: NearestLines;
   /** Points per frame of the tracks of a line, by line. */
   tracersByLine: Float64Array;
+}
+
+/** Why lines can't be told apart, for the methods that count them; null where they can. */
+export function whyNotTold({ groups, bends }: Pick<EstimateContext, 'groups' | 'bends'>): string | null {
+  if (!groups.told)
+    return 'The trapped tracks are too short or too still to tell which of them share a line.';
+  return bends
+    ? 'The lines bend: tracers stand together as on one line but don’t move as one, so lines can’t be told apart.'
+    : null;
 }
 
 /** Fewest trapped tracks that any method is tried on. */

@@ -1,12 +1,14 @@
-import { createRandom, mixSeed } from '../random';
-import { ANISOTROPY_ERROR, THICKNESS_ERROR, type EstimateContext } from './context';
-import { lnSpread, notUsable, type DensityResult } from './interval';
-import { resampleLines } from './resample-lines';
+import { ANISOTROPY_ERROR, THICKNESS_ERROR, type EstimateContext, whyNotTold } from './context';
+import { notUsable, type DensityResult } from './interval';
+import { widenForFewLines } from './line-spread';
+import { sumError } from './shared-motion';
 import { decoratedShare } from './sheet-geometry';
 import { lineDensityFromCrossings, spacingFromDensity } from './stereology';
 
 /** A sheet thicker than this part of the spacing is no plane that lines cross. */
 const THIN_PART = 0.3;
+/** Relative step of a derivative. */
+const STEP = 1e-3;
 
 /**
  * L = 2 P_A for isotropic lines (Saltykov 1945): distinct lines that cross the sheet per area, lines
@@ -14,12 +16,10 @@ const THIN_PART = 0.3;
  */
 export function crossingsEstimate(context: EstimateContext): DensityResult {
   const method = 'crossings';
-  const { groups, fellows, nearest, pool, conditions, recipe } = context;
+  const { fellows, nearest, pool, conditions } = context;
   const h = conditions.sheetThickness_m;
-  if (!groups.told) {
-    const note = 'The trapped tracks are too short or too still to tell which of them share a line.';
-    return notUsable(method, note);
-  }
+  const untold = whyNotTold(context);
+  if (untold) return notUsable(method, untold);
   const seenPerAreaM2 = nearest.linesPerFrame / pool.areaM2;
   const inputs = {
     linesPerFrame: { value: nearest.linesPerFrame, unit: '' },
@@ -48,20 +48,16 @@ export function crossingsEstimate(context: EstimateContext): DensityResult {
     const note = `The light sheet is ${part.toFixed(1)} times as thick as the lines are apart; crossings need less than ${THIN_PART}.`;
     return notUsable(method, note, filled);
   }
-  const random = createRandom(mixSeed(recipe.seed, 43));
-  const total = (of: Float64Array) => of.reduce((a, b) => a + b, 0);
-  const tracersNow = total(context.tracersByLine);
-  const pairsNow = total(fellows.pairsByLine);
-  const sums = [nearest.present, context.tracersByLine, fellows.pairsByLine];
-  const draws = resampleLines(random, groups.lines, sums, recipe.bootstrapDraws, ([lines, n, pairs]) => {
-    const factor = pairs / pairsNow / (n / tracersNow);
-    return lines / decoratedShare(usedPerLengthM * factor * h);
-  });
+  const perDensity = decoratedShare(usedPerLengthM * h * (1 + STEP)) / share;
+  const sharePower = Math.log(perDensity) / Math.log1p(STEP);
+  // Lines come as a Poisson process, each for the share of the time that it is seen.
+  const lines = nearest.present.map((of) => of / nearest.linesPerFrame);
+  const error = Math.hypot(widenForFewLines(sumError(lines, []), lines), sharePower * fellows.perLengthError);
   const thicker = decoratedShare(usedPerLengthM * h * (1 + THICKNESS_ERROR));
   return {
     method,
     valueM2,
-    statistical: lnSpread(draws),
+    statistical: error,
     systematic: Math.hypot(ANISOTROPY_ERROR, Math.log(thicker / share)),
     inputs: filled,
     note: `Lines that cross the sheet per area, twice; lines without tracers added (${Math.round(100 * share)} % carry one).`,

@@ -8,7 +8,7 @@ import { crossingsEstimate } from './crossings';
 import { withoutTracers, type EstimateContext } from './context';
 import type { Estimate, EstimateMethod } from './estimate';
 import { decayEstimate } from './decay';
-import { findFellows } from './fellows';
+import { findFellows } from './find-fellows';
 import { freeFlights, freePathEstimate } from './free-path';
 import { heatFluxPrior } from './heat-flux-prior';
 import { asEstimates, notUsable, type DensityResult } from './interval';
@@ -80,8 +80,10 @@ export function lineDensityEstimates(
       if (groups.line[i] >= 0)
         tracersByLine[groups.line[i]] += (tracks.start[i + 1] - tracks.start[i]) / image.frames;
     }
-    const fellows = h ? findFellows(pool, groups, image, conditions, h, recipe.spotSizePx) : null;
+    const found = h
+      ? findFellows(tracks, pool, groups, tracersByLine, image, conditions, h, recipe.spotSizePx)
+      : { fellows: null, by: 'motion' as const, bends: false };
     const nearest = nearestLines(tracks, pool, groups, image, conditions.pixelSize_m);
-    return { tracks, image, conditions, recipe, pool, groups, fellows, nearest, tracersByLine };
+    return { tracks, image, conditions, recipe, pool, groups, ...found, nearest, tracersByLine };
   }
 }

@@ -1,6 +1,7 @@
 import { mixSeed } from '../random';
 import type { Tracks } from '../types';
 import type { LineGroups } from './line-groups';
+import { nearPoints } from './near-points';
 import type { TrappedPool } from './trapped-pool';
 
 /** Frames looked at, evenly over the recording: the pattern changes slowly. */
@@ -26,6 +27,11 @@ export interface NearestLines {
   used: Uint8Array;
   /** Share of the trapped points that belong to tracks long enough to be used. */
   usedShare: number;
+  /**
+   * Lines that are seen no further apart than lines typically are, each pair once: what is measured of
+   * them depends on each other, since a distance between two is often the nearest one of both.
+   */
+  neighbours: [lineA: number, lineB: number][];
 }
 
 /**
@@ -56,11 +62,17 @@ export function nearestLines(
     usedPoints += length;
   }
   const present = new Float64Array(groups.lines);
+  const neighbours = new Map<number, [number, number]>();
   let frames = 0;
   for (let frame = Math.floor(step / 2); frame < image.frames; frame += step) {
     const { line, x, y } = representatives(tracks, used, groups, frame);
     frames++;
     const nearest = nearestDistances(x, y, image);
+    const typicalPx = Math.sqrt((image.width * image.height) / Math.max(1, line.length));
+    for (const { i, j } of nearPoints(x, y, typicalPx)) {
+      const [a, b] = line[i] < line[j] ? [line[i], line[j]] : [line[j], line[i]];
+      neighbours.set(a * groups.lines + b, [a, b]);
+    }
     for (let i = 0; i < line.length; i++) {
       present[line[i]]++;
       const edge = Math.min(x[i], y[i], image.width - 1 - x[i], image.height - 1 - y[i]) + 0.5;
@@ -76,6 +88,7 @@ export function nearestLines(
     used,
     linesPerFrame: present.reduce((a, b) => a + b, 0),
     usedShare: points > 0 ? usedPoints / points : 0,
+    neighbours: [...neighbours.values()],
   };
 }
 

@@ -1,7 +1,7 @@
-import { createRandom, mixSeed } from '../random';
-import { ANISOTROPY_ERROR, THICKNESS_ERROR, type EstimateContext } from './context';
-import { lnSpread, notUsable, type DensityResult } from './interval';
-import { resampleLines } from './resample-lines';
+import { ANISOTROPY_ERROR, THICKNESS_ERROR, type EstimateContext, whyNotTold } from './context';
+import { notUsable, type DensityResult } from './interval';
+import { widenForFewLines } from './line-spread';
+import { sumError } from './shared-motion';
 import { decoratedShare } from './sheet-geometry';
 import { lineDensityFromNeighbourDistance, neighbourDistance } from './stereology';
 
@@ -9,6 +9,8 @@ import { lineDensityFromNeighbourDistance, neighbourDistance } from './stereolog
 const THIN_PART = 0.3;
 /** Added to ln L's error when the sheet is thicker than that. */
 const THICK_ERROR = 0.15;
+/** Relative step of a derivative. */
+const STEP = 1e-3;
 
 /**
  * L = 1 / (2 <r>^2) from the distance between neighbouring lines, one tracer standing for each,
@@ -17,14 +19,10 @@ const THICK_ERROR = 0.15;
  */
 export function neighbourDistanceEstimate(context: EstimateContext): DensityResult {
   const method = 'neighbour-distance';
-  const { groups, fellows, nearest, conditions, recipe } = context;
+  const { fellows, nearest, conditions } = context;
   const h = conditions.sheetThickness_m;
-  if (!groups.told) {
-    return notUsable(
-      method,
-      'The trapped tracks are too short or too still to tell which of them share a line.',
-    );
-  }
+  const untold = whyNotTold(context);
+  if (untold) return notUsable(method, untold);
   const total = (of: Float64Array) => of.reduce((a, b) => a + b, 0);
   const perAreaM2 = total(nearest.ended) / total(nearest.areaM2);
   if (!(perAreaM2 > 0))
@@ -55,26 +53,22 @@ export function neighbourDistanceEstimate(context: EstimateContext): DensityResu
     const note = `The light sheet is ${part.toFixed(1)} times as thick as the lines are apart: distances in its projection say nothing.`;
     return notUsable(method, note, filled);
   }
-  const random = createRandom(mixSeed(recipe.seed, 42));
-  const sums = [nearest.ended, nearest.areaM2, context.tracersByLine, fellows.pairsByLine];
-  const tracersNow = total(context.tracersByLine);
-  const pairsNow = total(fellows.pairsByLine);
-  const draws = resampleLines(
-    random,
-    groups.lines,
-    sums,
-    recipe.bootstrapDraws,
-    ([ended, area, n, pairs]) => {
-      const factor = pairs / pairsNow / (n / tracersNow);
-      return ended / area / decoratedShare(usedPerLengthM * factor * h);
-    },
+  const perDensity = decoratedShare(usedPerLengthM * h * (1 + STEP)) / share;
+  const sharePower = Math.log(perDensity) / Math.log1p(STEP);
+  const ended = total(nearest.ended);
+  const area = total(nearest.areaM2);
+  // What each line adds to ln L beyond its share: ended distances over areas.
+  const influence = nearest.ended.map((of, l) => of / ended - nearest.areaM2[l] / area);
+  const error = Math.hypot(
+    widenForFewLines(sumError(influence, nearest.neighbours), nearest.ended),
+    sharePower * fellows.perLengthError,
   );
   const thicker = decoratedShare(usedPerLengthM * h * (1 + THICKNESS_ERROR));
   const thick = part > THIN_PART;
   return {
     method,
     valueM2,
-    statistical: lnSpread(draws),
+    statistical: error,
     systematic: Math.hypot(ANISOTROPY_ERROR, Math.log(thicker / share), thick ? THICK_ERROR : 0),
     inputs: filled,
     note: `Distance between neighbouring lines, lines without tracers added (${Math.round(100 * share)} % carry one)${thick ? '; the sheet is not thin against the spacing' : ''}.`,

@@ -25,6 +25,9 @@ export interface PairMotion {
   rigid: boolean;
   /** The same for the second track's motion turned by a right angle, which breaks every bond. */
   rigidWhenTurned: boolean;
+  /** Sum of products of their motions, and what it would be if they moved as one, px^2: noise cancels in both on average. */
+  together: number;
+  asOne: number;
 }
 
 /**
@@ -80,6 +83,7 @@ export function pairMotion(
   const together = dot - (ax * bx + ay * by) / n;
   const turned = cross - (ax * by - ay * bx) / n;
   const degrees = 2 * (n - 1);
+  const moved = spreadA + spreadB - (noise / ERROR_MARGIN ** 2) * degrees;
   const motion = Math.max(0, spreadA + spreadB - noise * degrees);
   const limit = noise * (degrees + RIGID_SIGMAS * Math.sqrt(2 * degrees) + 6) + BEND_PART * motion;
   return {
@@ -92,5 +96,7 @@ export function pairMotion(
     telling: motion > TELLING_FACTOR * limit,
     rigid: spreadA + spreadB - 2 * together <= limit,
     rigidWhenTurned: spreadA + spreadB - 2 * turned <= limit,
+    together,
+    asOne: moved / 2,
   };
 }

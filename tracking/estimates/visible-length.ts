@@ -1,5 +1,5 @@
 import { chainLengths } from './chain-lengths';
-import type { EstimateContext } from './context';
+import { whyNotTold, type EstimateContext } from './context';
 import { notUsable, type DensityResult } from './interval';
 
 /** Fewer lines with two tracers or more than this give no length. */
@@ -14,10 +14,8 @@ export function visibleLengthEstimate(context: EstimateContext): DensityResult {
   const method = 'visible-length';
   const { tracks, groups, nearest, pool, image, conditions } = context;
   const h = conditions.sheetThickness_m;
-  if (!groups.told) {
-    const note = 'The trapped tracks are too short or too still to tell which of them share a line.';
-    return notUsable(method, note);
-  }
+  const untold = whyNotTold(context);
+  if (untold) return notUsable(method, untold);
   const chains = chainLengths(tracks, groups, nearest.used, image.frames);
   const lengthPx = chains.lengthPx.reduce((a, b) => a + b, 0);
   const perAreaPerM = (lengthPx * conditions.pixelSize_m) / pool.areaM2;

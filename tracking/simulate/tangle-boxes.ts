@@ -1,4 +1,5 @@
 import type { Box } from './isotropic-lines';
+import { wavyReach, type WavyLineOptions } from './local-induction/wavy-line';
 import { smoothPathReach } from './smooth-path';
 import type { FilledTangleOptions } from './tangle-options';
 
@@ -12,6 +13,11 @@ export function lineBox(o: FilledTangleOptions): Box {
   const durationS = o.frames * o.frameIntervalS;
   const room = smoothPathReach(o.wobbleMPerS, o.wobbleTimeS, durationS) + BURST_ROOM_M;
   return roomyBox(o, room, o.tangleVelocityMPerS * durationS);
+}
+
+/** The box that axes of curved lines fill: so much larger than the sheet that bends from outside reach into it as often as others leave it. */
+export function curvedBox(o: FilledTangleOptions, waves: WavyLineOptions): Box {
+  return roomyBox(o, wavyReach(waves), o.tangleVelocityMPerS * o.frames * o.frameIntervalS);
 }
 
 /** The box that free tracers fill, long enough upstream that their number in the sheet stays the same. */

@@ -1,4 +1,5 @@
 import { LINE_VELOCITY_FACTOR, lineVelocity } from '../estimates/line-velocity-law';
+import type { WavyLineOptions } from './local-induction/wavy-line';
 
 /** Wobble of reconnecting pairs in a scene without a tangle, m/s: that of lines 0.3 mm apart. */
 const VELOCITY_WITHOUT_LINES_M_S = 0.5e-3;
@@ -42,6 +43,11 @@ export interface TangleOptions {
   /** Slope of the gentle bends of a line (0 is straight) and their length, m. */
   bendSlope?: number;
   bendLengthM?: number;
+  /**
+   * Waves of lines that bend strongly and move by their own curvature, by local induction, instead of
+   * wobbling as a whole; null (the default) for lines that keep their shape. Such lines catch no tracers.
+   */
+  curved?: WavyLineOptions | null;
   /** Mean photoelectrons of a tracer in a frame, and the spread of its logarithm between tracers. */
   brightnessE?: number;
   brightnessSpread?: number;
@@ -72,6 +78,8 @@ export function fillTangleOptions(options: TangleOptions): FilledTangleOptions {
   })) {
     if (!(value > 0)) throw new RangeError(`${name} must be > 0. Received ${value}.`);
   }
+  if (options.curved && options.captureRadiusM)
+    throw new RangeError('Lines that move by local induction catch no tracers: leave out captureRadiusM.');
   const [fx, fy] = options.flowDirection ?? [1, 0];
   const across = Math.abs(fy) * widthPx + Math.abs(fx) * heightPx;
   return {
@@ -85,6 +93,7 @@ export function fillTangleOptions(options: TangleOptions): FilledTangleOptions {
     acrossFlow: false,
     bendSlope: 0.1,
     bendLengthM: 1e-3,
+    curved: null,
     brightnessE: 400,
     brightnessSpread: 0.2,
     blinkPerFrame: 0.01,

@@ -1,4 +1,5 @@
 import { mixSeed } from '../random';
+import { addBeadsOnCurvedLines } from './beads-on-curved-lines';
 import { addBeadsOnLines } from './beads-on-lines';
 import { addDecoyPairs } from './decoy-pairs';
 import { addFreeTracers } from './free-tracers';
@@ -15,7 +16,9 @@ import { fillTangleOptions, type TangleOptions } from './tangle-options';
 export function tangleScene(options: TangleOptions): Scene {
   const filled = fillTangleOptions(options);
   const builder = new SceneBuilder(filled.widthPx, filled.heightPx, filled.frames);
-  const lines = addBeadsOnLines(builder, filled, mixSeed(filled.seed, 1));
+  const lines = filled.curved ? [] : addBeadsOnLines(builder, filled, mixSeed(filled.seed, 1));
+  if (filled.curved && filled.lineDensityM2 > 0)
+    addBeadsOnCurvedLines(builder, filled, filled.curved, mixSeed(filled.seed, 1));
   const captures = addFreeTracers(builder, filled, lines, mixSeed(filled.seed, 2));
   const events = addReconnectingPairs(builder, filled, mixSeed(filled.seed, 3));
   addDecoyPairs(builder, filled, mixSeed(filled.seed, 4));

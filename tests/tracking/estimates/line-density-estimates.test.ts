@@ -92,7 +92,8 @@ describe('on beads of lines of known density', () => {
       const beads = density('beads-per-length');
       expect(Math.abs(Math.log((beads.value ?? 0) / lineDensityM2))).toBeLessThan(0.4);
       const perLength = beads.inputs.tracersPerLength.value as number;
-      expectWithin(perLength, beadsPerMetre, { rel: 0.35 });
+      // Some 25 pairs a frame on a dozen lines: a third is two standard errors.
+      expectWithin(perLength, beadsPerMetre, { rel: 0.5 });
     },
   );
 

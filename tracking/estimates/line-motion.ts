@@ -1,0 +1,122 @@
+import { trackSlice } from '../track-slice';
+import { alongAcross, trackVelocities, unitFlow } from '../velocities';
+import type { EstimateContext } from './context';
+
+/** Velocities beyond this many widths are left out: they belong to reconnections. */
+const TRIM = 2.5;
+/** Share of a Gaussian within that, its density there, and its variance within over the whole one. */
+const WITHIN = 0.987580669;
+const DENSITY_AT = 0.0175283005;
+export const TRIMMED_VARIANCE = 1 - (2 * TRIM * DENSITY_AT) / WITHIN;
+/**
+ * Where chance widens a sample, the limit of the trimming widens with it: a change of the variance within
+ * a fixed limit changes the result by so much more (influence function of the fixed point, a Gaussian
+ * taken for granted).
+ */
+const TRIMMING_GAIN =
+  1 / (1 - (TRIM * DENSITY_AT * (TRIM * TRIM - TRIMMED_VARIANCE)) / (WITHIN * TRIMMED_VARIANCE));
+const TRIM_ROUNDS = 20;
+/** Noise below this part of the variance hardly matters: the shortest such lag is taken. */
+const NOISE_PART_GOOD = 0.1;
+/** Fewer velocities at twice the lag than this part of those at the lag can't say what it would be without lag. */
+const TWICE_PART_LEAST = 0.5;
+
+/** Trimmed velocities of trapped tracks across the flow at one lag. */
+interface TrimmedVelocities {
+  lagFrames: number;
+  velocities: number;
+  meanMS: number;
+  /** Velocities further from the mean than this are left out, m/s. */
+  limitMS: number;
+  /** As of a Gaussian that was not trimmed, and the part of it that localization explains, (m/s)^2. */
+  variance: number;
+  noise: number;
+  /** What each track adds to the variance beyond its share: by these its error is known. */
+  influence: Float64Array;
+}
+
+/** Motion of lines across the flow at the shortest lag that keeps noise small, and as it would be without lag. */
+export interface TransverseMotion extends TrimmedVelocities {
+  /**
+   * Variance without lag over that at the lag, noise taken off both. A line forgets its velocity, so
+   * that means over a lag are slower: 1 - lag / (3 tau) to first order, twice that at twice the lag.
+   * 1 where too few tracks last for twice the lag.
+   */
+  withoutLag: number;
+  /** Variance without noise and lag, (m/s)^2, and what each track adds to it beyond its share. */
+  variance0: number;
+  influence0: Float64Array;
+}
+
+/** Null where nothing can be measured. */
+export function transverseMotion(context: EstimateContext): TransverseMotion | null {
+  const lags = [...context.recipe.lagsFrames].sort((a, b) => a - b);
+  let best: TrimmedVelocities | null = null;
+  for (const lag of lags) {
+    const now = trimmedVelocities(context, lag);
+    if (now && (!best || now.noise / now.variance < best.noise / best.variance)) best = now;
+    if (best && best.noise / best.variance <= NOISE_PART_GOOD) break;
+  }
+  if (!best) return null;
+  const variance = best.variance - best.noise;
+  const twice = trimmedVelocities(context, 2 * best.lagFrames);
+  if (!twice || twice.velocities < TWICE_PART_LEAST * best.velocities || !(variance > 0))
+    return { ...best, withoutLag: 1, variance0: variance, influence0: best.influence };
+  const variance0 = 2 * variance - (twice.variance - twice.noise);
+  return {
+    ...best,
+    withoutLag: variance0 / variance,
+    variance0,
+    influence0: best.influence.map((of, i) => 2 * of - twice.influence[i]),
+  };
+}
+
+function trimmedVelocities(context: EstimateContext, lagFrames: number): TrimmedVelocities | null {
+  const { tracks, pool, conditions } = context;
+  const flow = unitFlow(conditions);
+  const values: number[] = [];
+  const trackOf: number[] = [];
+  let noise = 0;
+  for (let i = 0; i < tracks.count; i++) {
+    if (pool.chosen[i] !== 1) continue;
+    const v = trackVelocities(trackSlice(tracks, i), lagFrames, conditions);
+    for (let k = 0; k < v.frame.length; k++) {
+      values.push(flow ? alongAcross(v.vxMS[k], v.vyMS[k], flow)[1] : v.vyMS[k]);
+      trackOf.push(i);
+      noise += (v.svxMS[k] ** 2 + v.svyMS[k] ** 2) / 2;
+    }
+  }
+  const n = values.length;
+  if (n < 2 || !Number.isFinite(noise)) return null;
+  noise /= n;
+  let mean = values.reduce((a, b) => a + b, 0) / n;
+  let variance = values.reduce((sum, v) => sum + (v - mean) ** 2, 0) / n;
+  let limit = Infinity;
+  let kept = n;
+  for (let round = 0; round < TRIM_ROUNDS; round++) {
+    limit = TRIM * Math.sqrt(variance);
+    kept = 0;
+    let sum = 0;
+    let square = 0;
+    for (const v of values) {
+      if (Math.abs(v - mean) > limit) continue;
+      kept++;
+      sum += v - mean;
+      square += (v - mean) ** 2;
+    }
+    const shift = sum / kept;
+    const next = (square / kept - shift * shift) / TRIMMED_VARIANCE;
+    mean += shift;
+    const settled = Math.abs(next / variance - 1) < 1e-6;
+    variance = next;
+    if (settled) break;
+  }
+  const influence = new Float64Array(tracks.count);
+  values.forEach((v, i) => {
+    if (Math.abs(v - mean) > limit) return;
+    influence[trackOf[i]] += (v - mean) ** 2 - TRIMMED_VARIANCE * variance;
+  });
+  const scale = TRIMMING_GAIN / (TRIMMED_VARIANCE * kept);
+  for (let i = 0; i < influence.length; i++) influence[i] *= scale;
+  return { lagFrames, velocities: n, meanMS: mean, limitMS: limit, variance, noise, influence };
+}

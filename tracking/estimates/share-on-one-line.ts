@@ -1,0 +1,40 @@
+import type { PairMotion } from './pair-motion';
+
+/**
+ * How many of some pairs sit on one line, without telling which: the sum of the products of their motions
+ * over what it would be if all moved as one. Products of independent motions cancel, so that the share is
+ * right on average, however short or still the pairs are; where lines bend it is too low by how much less
+ * alike two places of a line move.
+ *
+ * @param line of each track, as far as they are known.
+ */
+export function shareOnOneLine(
+  pairs: readonly PairMotion[],
+  line: Int32Array,
+  weightOf: (m: PairMotion) => number,
+): { share: number; pairs: number; error: number } {
+  let all = 0;
+  let together = 0;
+  let asOne = 0;
+  const near: [weight: number, m: PairMotion][] = [];
+  for (const m of pairs) {
+    const weight = weightOf(m);
+    if (weight === 0) continue;
+    all += weight;
+    together += weight * m.together;
+    asOne += weight * m.asOne;
+    near.push([weight, m]);
+  }
+  if (!(asOne > 0)) return { share: 0, pairs: 0, error: 0 };
+  const share = Math.min(1, Math.max(0, together / asOne));
+  // All pairs of tracers of the same two lines say the same again.
+  const byLines = new Map<string, number>();
+  for (const [w, m] of near) {
+    const [a, b] = [line[m.trackA], line[m.trackB]];
+    const key = a < b ? `${a} ${b}` : `${b} ${a}`;
+    byLines.set(key, (byLines.get(key) ?? 0) + w * (m.together - share * m.asOne));
+  }
+  let square = 0;
+  for (const off of byLines.values()) square += off * off;
+  return { share, pairs: share * all, error: (all * Math.sqrt(square)) / asOne };
+}

@@ -1,0 +1,47 @@
+import type { LineGroups } from './line-groups';
+
+/**
+ * Standard error of a sum of independent parts but for some pairs that may be related: squares and twice
+ * the products of those pairs (Conley, J. Econometrics 92, 1 (1999)). Where the products would lower it,
+ * it stays that of independent parts.
+ *
+ * @param part deviations, with mean 0 or of a Poisson process.
+ * @param chance that a pair is related.
+ */
+export function sumError(
+  part: Float64Array,
+  related: Iterable<readonly [number, number]>,
+  chance = 1,
+): number {
+  let between = 0;
+  for (const [a, b] of related) between += part[a] * part[b];
+  return Math.sqrt(part.reduce((sum, of) => sum + of * of, 0) + 2 * chance * Math.max(0, between));
+}
+
+/**
+ * Pairs of lines, each once, that may be one: tracks of both come near each other and are too short or too
+ * still to be told apart, and no other tracks of the two are.
+ */
+export function perhapsOneLine({ line, pairs, untold }: LineGroups): [number, number][] {
+  const lines = line.reduce((most, of) => Math.max(most, of), -1) + 1;
+  const keyOf = (a: number, b: number) => Math.min(a, b) * lines + Math.max(a, b);
+  const apart = new Set<number>();
+  for (const m of pairs) if (!m.rigid) apart.add(keyOf(line[m.trackA], line[m.trackB]));
+  const perhaps = new Map<number, [number, number]>();
+  for (const m of untold) {
+    const [a, b] = [line[m.trackA], line[m.trackB]];
+    if (a === b) continue;
+    const key = keyOf(a, b);
+    if (!apart.has(key)) perhaps.set(key, [a, b]);
+  }
+  return [...perhaps.values()];
+}
+
+/** Sums what tracks add over the tracks of each line. */
+export function byLine(part: Float64Array, groups: Pick<LineGroups, 'line' | 'lines'>): Float64Array {
+  const sums = new Float64Array(groups.lines);
+  groups.line.forEach((line, track) => {
+    if (line >= 0) sums[line] += part[track];
+  });
+  return sums;
+}
