@@ -8,9 +8,9 @@ import { TracerFilter } from './tracer-filter';
 import { putBefore, type TrackLinks } from './track-links';
 
 /** Explanations kept from frame to frame. */
-const KEPT = 10;
+const KEPT = 6;
 /** Explanations so much (-2 ln likelihood) behind the best one never catch up. */
-const HOPELESS = 32;
+const HOPELESS = 18;
 /** Slots of the explanations of one frame; those of the next one lie in the other bank. */
 const BANK = 2 * KEPT;
 /** Tracks that are both seen in every frame and stay this many spot sizes apart are not mistaken. */
