@@ -2,8 +2,11 @@ import { createHash } from 'node:crypto';
 import { readdir, readFile } from 'node:fs/promises';
 import { join } from 'node:path';
 import { compareTables } from './analyst';
+import { checkCorrections } from './check-corrections';
 import { onDatabase } from './database';
 import { assertNotes, editedRuns } from './editor';
+import { checkExports } from './exporter';
+import { checkVerdicts } from './judge';
 import type { Load } from './load';
 import type { EnduringProduct } from './product';
 
@@ -12,6 +15,9 @@ export async function checkAll(load: Load, product: EnduringProduct): Promise<vo
   await checkRecordings(load, product);
   await checkAnalyses(load);
   await checkRuns(load);
+  await checkCorrections(load);
+  await checkVerdicts(load);
+  await checkExports(load);
   await checkLeftovers(load, product);
 }
 

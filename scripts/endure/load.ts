@@ -23,6 +23,7 @@ export interface Load {
   ledger: Ledger;
   stacks: ReferenceStack[];
   client: PatientClient;
+  annotator: PatientClient;
   administrator: PatientClient;
   campaignId: string;
   runId: string;

@@ -2,6 +2,7 @@ import { createHash } from 'node:crypto';
 import { setTimeout as pause } from 'node:timers/promises';
 import type { Random } from '@/tracking/random';
 import { pick, type Client, type Load } from './load';
+import { askAgain } from './own-analysis';
 import type { ReferenceStack } from './stacks';
 
 const VERSION = { 'tus-resumable': '1.0.0' };
@@ -100,7 +101,8 @@ function brokenBody(piece: Uint8Array): ReadableStream<Uint8Array> {
   });
 }
 
-async function untilReady({ client, ledger, recordings }: Load, stack: ReferenceStack, id: string) {
+async function untilReady(load: Load, stack: ReferenceStack, id: string) {
+  const { client, ledger, recordings } = load;
   const end = Date.now() + READY_WITHIN_MS;
   for (;;) {
     const now = await client.json<RecordingAnswer>(`/api/v1/recordings/${id}`);
@@ -110,7 +112,9 @@ async function untilReady({ client, ledger, recordings }: Load, stack: Reference
       recordings.push({ id, stack, asked: 0 });
       return ledger.count('recordings checked');
     }
-    if (now.state === 'refused')
+    // The check lost three workers and was given up: that is no word about the stack.
+    if (now.state === 'refused' && now.refusal?.code === 'CHECK_FAILED') await askAgain(load, id);
+    else if (now.state === 'refused')
       return ledger.broken(`recording ${id} was refused: ${JSON.stringify(now.refusal)}`);
     if (Date.now() > end)
       return ledger.broken(`recording ${id} is still ${now.state} after ${READY_WITHIN_MS / 1000} s`);

@@ -121,3 +121,40 @@ export function tellTables(before: TableSize[], after: TableSize[]): string {
   }
   return textTable(rows);
 }
+
+/** Bells of the queue are gone soon after they rang: more rows than this would be a leak. */
+const BELLS_MOST = 300;
+/** Halves with fewer new analyses than this say nothing about growth. */
+const ANALYSES_LEAST = 10;
+/** An analysis of the second half may take so many times the room of one of the first: pages fill unevenly. */
+const GROWTH_MOST = 1.6;
+
+const sum = (sizes: readonly TableSize[]) => sizes.reduce((bytes, size) => bytes + size.bytes, 0);
+const rowsOf = (sizes: readonly TableSize[], name: string) =>
+  sizes.find((size) => size.name === name)?.rows ?? 0;
+
+/**
+ * Whether the database grows with what people make and not with time: room per analysis in both halves of the trial,
+ * and the rows of the queue when all work is done. Growth beyond the bounds is a broken promise.
+ */
+export function tellGrowth(
+  [start, middle, end]: readonly [TableSize[], TableSize[], TableSize[]],
+  ledger: Ledger,
+): string {
+  const half = (from: TableSize[], to: TableSize[]) => {
+    const analyses = rowsOf(to, 'public.analyses') - rowsOf(from, 'public.analyses');
+    return { analyses, perAnalysisMB: (sum(to) - sum(from)) / 2 ** 20 / Math.max(1, analyses) };
+  };
+  const [first, second] = [half(start, middle), half(middle, end)];
+  const enough = Math.min(first.analyses, second.analyses) >= ANALYSES_LEAST;
+  if (enough && second.perAnalysisMB > GROWTH_MOST * first.perAnalysisMB) {
+    ledger.broken(
+      `the database grew by ${first.perAnalysisMB.toFixed(2)} MB an analysis in the first half, by ${second.perAnalysisMB.toFixed(2)} MB in the second`,
+    );
+  }
+  const bells = rowsOf(end, 'pgboss.job');
+  if (bells > BELLS_MOST) ledger.broken(`the queue keeps ${bells} rows when all work is done`);
+  const words = ({ analyses, perAnalysisMB }: ReturnType<typeof half>) =>
+    `${perAnalysisMB.toFixed(2)} MB an analysis (${analyses})`;
+  return `Room in the database: first half ${words(first)}, second half ${words(second)}; rows of the queue at the end: ${bells}`;
+}

@@ -9,9 +9,12 @@ import { newId } from '@/lib/ids';
 import { closeDatabase } from '@/models/database';
 import { analyst } from '@/scripts/endure/analyst';
 import { checkAll } from '@/scripts/endure/check';
+import { corrector } from '@/scripts/endure/corrector';
 import { cuttingProxy } from '@/scripts/endure/cutting-proxy';
 import { editor } from '@/scripts/endure/editor';
+import { exporter } from '@/scripts/endure/exporter';
 import { drawFault, FAULTS, type Victims } from '@/scripts/endure/faults';
+import { judge } from '@/scripts/endure/judge';
 import { openLedger, type Ledger } from '@/scripts/endure/ledger';
 import type { Client, Load } from '@/scripts/endure/load';
 import { makeLab } from '@/scripts/endure/make-lab';
@@ -20,7 +23,7 @@ import { startProduct } from '@/scripts/endure/product';
 import { reader } from '@/scripts/endure/reader';
 import { CONDITIONS, referenceStacks } from '@/scripts/endure/stacks';
 import { uploader } from '@/scripts/endure/uploader';
-import { tableSizes, tellProcesses, tellTables, watchProcesses } from '@/scripts/endure/watch';
+import { tableSizes, tellGrowth, tellProcesses, tellTables, watchProcesses } from '@/scripts/endure/watch';
 import { createRandom, type Random } from '@/tracking/random';
 
 // The whole product under load while one thing after the other goes wrong, by chance with a seed that is told; then
@@ -33,6 +36,9 @@ const CLIENTS: [Client, number][] = [
   [analyst, 2],
   [editor, 2],
   [reader, 3],
+  [corrector, 1],
+  [judge, 1],
+  [exporter, 1],
 ];
 /** Between the end of one fault and the next, s. */
 const CALM_S = [3, 12] as const;
@@ -87,6 +93,8 @@ async function main(): Promise<void> {
   const product = await startProduct(join(folder, 'data'), WORKERS, {
     BEADLINE_LIMIT_ANALYSES_PER_HOUR: '1000000',
     BEADLINE_LIMIT_CHANGES_PER_MINUTE: '1000000',
+    BEADLINE_LIMIT_EXPORTS_PER_HOUR: '1000000',
+    BEADLINE_LIMIT_QUIET_SECONDS: '3',
   });
   try {
     process.env.DATABASE_URL = product.databaseUrl;
@@ -96,6 +104,7 @@ async function main(): Promise<void> {
     const proxy = await cuttingProxy(product.port);
     const origin = `http://127.0.0.1:${proxy.port}`;
     const client = new PatientClient(origin, tokens.experimentalist);
+    const annotator = new PatientClient(origin, tokens.annotator);
     const administrator = new PatientClient(origin, tokens.lab_administrator);
     const campaign = await client.post<{ id: string }>('/api/v1/campaigns', newId(), { name: 'Endurance' });
     const run = await client.post<{ id: string }>(`/api/v1/campaigns/${campaign.id}/runs`, newId(), {
@@ -106,11 +115,18 @@ async function main(): Promise<void> {
     const end = Date.now() + minutes * 60_000;
     const isOver = () => Date.now() >= end;
     const load: Load = {
-      ...{ ledger, stacks, client, administrator, campaignId: campaign.id, runId: run.id },
+      ...{ ledger, stacks, client, annotator, administrator, campaignId: campaign.id, runId: run.id },
       ...{ recordings: [], analyses: [], isOver },
     };
     const tablesBefore = await tableSizes(product.databaseUrl);
     const watch = watchProcesses(product);
+    let tablesHalfway = tablesBefore;
+    const halfway = setTimeout(() => void lookHalfway(), (minutes * 60_000) / 2);
+    const lookHalfway = async (): Promise<void> => {
+      // The database may be away at this very moment.
+      tablesHalfway = await tableSizes(product.databaseUrl).catch(() => tablesHalfway);
+      if (tablesHalfway === tablesBefore && !isOver()) await pause(2_000).then(lookHalfway);
+    };
     const clients = CLIENTS.flatMap(([work, count], kind) =>
       Array.from({ length: count }, (_, i) =>
         work(load, createRandom(seed + 100 * (kind + 1) + i), i).catch((cause: unknown) =>
@@ -122,10 +138,13 @@ async function main(): Promise<void> {
     await Promise.all(clients);
     ledger.say('the time is over, all clients are done; looking at everything that was acknowledged');
     await pause(SETTLE_MS);
+    clearTimeout(halfway);
+    const tablesAfter = await tableSizes(product.databaseUrl);
     await checkAll(load, product);
     watch.stop();
     say(`\n${tellProcesses(watch.samples, ledger)}`);
-    say(`\n${tellTables(tablesBefore, await tableSizes(product.databaseUrl))}\n`);
+    say(`\n${tellTables(tablesBefore, tablesAfter)}\n`);
+    say(`${tellGrowth([tablesBefore, tablesHalfway, tablesAfter], ledger)}\n`);
     for (const [what, count] of [...ledger.counts].sort(([a], [b]) => a.localeCompare(b)))
       say(`${count} ${what}`);
     const statuses = [...client.statuses].sort(([a], [b]) => a - b);

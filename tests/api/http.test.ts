@@ -157,5 +157,11 @@ describe('every answer', () => {
 it('the health route says that database, queue and workers are there', async () => {
   const response = await get('/api/health');
   expect(response.status).toBe(200);
-  expect(await response.json()).toEqual({ status: 'up', database: 'up', queue: 'up', workers: 2 });
+  expect(await response.json()).toEqual({
+    status: 'up',
+    database: 'up',
+    queue: 'up',
+    storage: 'up',
+    workers: 2,
+  });
 });

@@ -1,6 +1,8 @@
 import { selectRow } from '@/models/queries/select';
 import { liveWorkers } from '@/models/queries/workers';
 
+import { assertStorageIsWritable } from '../uploads/storage-away';
+
 export const dynamic = 'force-dynamic';
 
 type Part = 'up' | 'down';
@@ -10,9 +12,10 @@ export async function GET(): Promise<Response> {
   const database = await answers(() => selectRow('SELECT 1 AS one'));
   const queue = await answers(() => selectRow('SELECT version FROM pgboss.version'));
   const workers = await liveWorkers().catch(() => 0);
-  const healthy = database === 'up' && queue === 'up' && workers > 0;
+  const storage = await answers(() => assertStorageIsWritable().then(() => true));
+  const healthy = database === 'up' && queue === 'up' && storage === 'up' && workers > 0;
   return Response.json(
-    { status: healthy ? 'up' : 'down', database, queue, workers },
+    { status: healthy ? 'up' : 'down', database, queue, storage, workers },
     { status: healthy ? 200 : 503, headers: { 'Cache-Control': 'no-store' } },
   );
 }

@@ -13,6 +13,7 @@ import { readChecksum } from './checksum';
 import { finishUpload } from './finish-upload';
 import { assertDiskHasRoom, assertFileSize } from './room-for';
 import { expiresHeader, headersOf, newExpiry, PIECE_TYPE, UPLOADS_PATH, wholeHeader } from './tus-headers';
+import { assertTakesUploads, storageAway } from './storage-away';
 import { passToTus } from './tus-server';
 import { arrivedBytes, removeUploadFiles } from './upload-files';
 import { withUploadLock } from './upload-locks';
@@ -36,6 +37,7 @@ export async function beginUpload(request: Request, viewer: Viewer): Promise<Ans
   if (!isId(metadata.run)) throw notFound('run');
   assertNotDeleted(await getRun(viewer.labId, metadata.run), 'run');
   await assertTakes(viewer.labId, { runId: metadata.run });
+  await assertTakesUploads();
   await assertDiskHasRoom(bytes);
   const expiresAt = newExpiry();
   const row = await createUpload(viewer, { runId: metadata.run, bytes, metadata, sentMetadata, expiresAt });
@@ -73,9 +75,8 @@ function bringsPiece(headers: Headers, bytes: number): boolean {
 async function createFile(request: Request, row: UploadRow): Promise<Record<string, string>> {
   const response = await passToTus(request, { method: 'POST', id: row.id, body: null });
   if (!response.ok) {
-    throw new LabError('UNAVAILABLE', 'Uploads are not possible now: the storage can not be written.', {
-      cause: new Error(`tus answered ${response.status}: ${(await response.text()).slice(0, 200)}`),
-    });
+    const said = (await response.text()).slice(0, 200);
+    throw storageAway('', {}, new Error(`tus answered ${response.status}: ${said}`));
   }
   if (row.bytes === 0) await finishUpload(row);
   return headersOf(row);

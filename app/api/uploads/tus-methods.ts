@@ -5,6 +5,7 @@ import { LabError } from '@/lib/errors';
 import { makersOfRun } from '@/models/queries/recordings';
 import { forgetUpload, getUpload, type UploadRow } from '@/models/queries/uploads';
 import { aboutUpload } from './about-upload';
+import { finishUpload } from './finish-upload';
 import { headersOf, PIECE_TYPE, wholeHeader } from './tus-headers';
 import { passToTus } from './tus-server';
 import { arrivedBytes, bytesFile, dropUnchecked, removeUploadFiles, sizeOf } from './upload-files';
@@ -20,6 +21,11 @@ export async function headOfUpload(request: Request, viewer: Viewer, id: string)
   return aboutUpload(row, async () => {
     assertAnswers(row);
     const offset = row.state === 'finished' ? row.bytes : await arrivedBytes(id);
+    // All had arrived when the database or the disk failed. Who asks now would take "all there" for the end, and wait
+    // for a check that nobody has asked for; a failure is answered instead, so that they ask again.
+    if (row.state === 'arriving' && offset === row.bytes) {
+      await withUploadLock(id, viewer.userId, () => finishUpload(row));
+    }
     return new Answer(undefined, 200, {
       ...headersOf(row),
       // "and its value as specified by the Client during the creation"

@@ -20,25 +20,42 @@ export async function sizeOf(path: string): Promise<number | null> {
   return file?.size ?? null;
 }
 
+/** From which byte on nothing has been checked; null when all has, or when the note says nothing. */
+async function uncheckedFrom(id: string): Promise<number | null> {
+  const text = await readFile(uncheckedFile(id), 'utf8').catch(() => '');
+  return /^\d+$/.test(text) ? Number(text) : null;
+}
+
 /** Bytes that count as arrived: a piece whose checksum was not verified does not. */
 export async function arrivedBytes(id: string): Promise<number> {
   const size = (await sizeOf(bytesFile(id))) ?? 0;
-  const unchecked = await readFile(uncheckedFile(id), 'utf8').catch(() => null);
-  return unchecked === null ? size : Math.min(size, Number(unchecked));
+  const unchecked = await uncheckedFrom(id);
+  return unchecked === null ? size : Math.min(size, unchecked);
 }
 
-/** Before a piece with a checksum is written: what comes after this byte counts for nothing yet. */
-export const markUnchecked = (id: string, offset: number): Promise<void> =>
-  writeFile(uncheckedFile(id), String(offset));
+/**
+ * Before a piece with a checksum is written: what comes after this byte counts for nothing yet. The note
+ * appears whole or not at all: one without its number, on a full disk, would make everything count for nothing.
+ */
+export async function markUnchecked(id: string, offset: number): Promise<void> {
+  const aside = `${uncheckedFile(id)}-new`;
+  try {
+    await writeFile(aside, String(offset));
+    await rename(aside, uncheckedFile(id));
+  } catch (cause) {
+    await rm(aside, { force: true }).catch(() => undefined);
+    throw cause;
+  }
+}
 
 export const markChecked = (id: string): Promise<void> => rm(uncheckedFile(id), { force: true });
 
 /** Takes away a piece that turned out wrong, or was left unverified when its process died. */
 export async function dropUnchecked(id: string): Promise<void> {
-  const unchecked = await readFile(uncheckedFile(id), 'utf8').catch(() => null);
+  const unchecked = await uncheckedFrom(id);
   if (unchecked === null) return;
   const size = await sizeOf(bytesFile(id));
-  if (size !== null && size > Number(unchecked)) await truncate(bytesFile(id), Number(unchecked));
+  if (size !== null && size > unchecked) await truncate(bytesFile(id), unchecked);
   await markChecked(id);
 }
 

@@ -4,6 +4,7 @@ import { prolongUpload, type UploadRow } from '@/models/queries/uploads';
 import { uploadsFolder } from '@/models/queries/received-bytes';
 import { readChecksum, type Checksum } from './checksum';
 import { finishUpload } from './finish-upload';
+import { assertTakesUploads, isFull, storageFull } from './storage-away';
 import { headersOf, newExpiry } from './tus-headers';
 import { passToTus } from './tus-server';
 import { watchBody } from './upload-body';
@@ -12,9 +13,6 @@ import type { Holder } from './upload-locks';
 
 /** Below this a failed write means a full disk, bytes. */
 const FULL_BYTES = 4e6;
-
-/** What a system says when a file can't grow: the disk is full, or the share of this user. */
-const FULL = /ENOSPC|EDQUOT|EFBIG/;
 
 /** Bytes of the body as its sender counts them; 0 where the count is not sent ahead. */
 export const announcedBytes = (headers: Headers): number => Number(headers.get('content-length') ?? 0);
@@ -85,11 +83,8 @@ async function explain(response: Response, row: UploadRow, arrived: number): Pro
   if (response.status === 413) throw largerThanAnnounced(row.bytes);
   const said = (await response.text()).slice(0, 200);
   const disk = await statfs(uploadsFolder()).catch(() => null);
-  if (FULL.test(said) || (disk && disk.bavail * disk.bsize < FULL_BYTES)) {
-    throw new LabError('STORAGE_FULL', 'Storage full. What has arrived is kept: go on when there is room.', {
-      headers,
-    });
-  }
+  await assertTakesUploads(' What has arrived is kept.', headers);
+  if (isFull(said) || (disk && disk.bavail * disk.bsize < FULL_BYTES)) throw storageFull(headers);
   throw new LabError(
     'UNAVAILABLE',
     'The piece was cut off. Ask how much has arrived, and go on from there.',
