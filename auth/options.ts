@@ -1,6 +1,7 @@
 import type { AuthOptions } from 'next-auth';
 import Credentials from 'next-auth/providers/credentials';
 import { sessionSecret } from '@/lib/env';
+import { addSession, leaveSession } from '@/models/queries/sessions';
 import { cookieOptions, SESSION_ABSOLUTE_S, SESSION_IDLE_S, sessionCookieName } from './session-cookie';
 import { signInWith } from './sign-in';
 
@@ -24,18 +25,28 @@ export function authOptions(): AuthOptions {
             String(credentials?.password ?? ''),
             addressOf(request.headers ?? {}),
           );
-          if (result.ok) return result.person;
+          if (result.ok) {
+            const { id, sessionVersion } = result.person;
+            const agent = String(request.headers?.['user-agent'] ?? '');
+            return { id, sessionVersion, sessionId: await addSession(id, sessionVersion, agent) };
+          }
           if (result.waitS !== null) throw new Error(`${TOO_MANY_TRIES}-${result.waitS}`);
           return null;
         },
       }),
     ],
+    events: {
+      async signOut({ token }) {
+        if (typeof token?.sessionId === 'string') await leaveSession(token.sessionId);
+      },
+    },
     callbacks: {
       jwt({ token, user }) {
         const nowS = Math.floor(Date.now() / 1000);
         if (user) {
           token.userId = user.id;
           token.sessionVersion = (user as { sessionVersion?: number }).sessionVersion;
+          token.sessionId = (user as { sessionId?: string }).sessionId;
           token.signedInAt = nowS;
         }
         // A renewed cookie must not outlive the whole life of its session.

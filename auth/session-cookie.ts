@@ -12,6 +12,8 @@ export interface Session {
   userId: string;
   sessionVersion: number;
   labId: string | null;
+  /** Its row in `sessions`; null for one that began before there were rows. */
+  sessionId?: string | null;
   /** Seconds since 1970. */
   signedInAt: number;
   issuedAt: number;
@@ -37,6 +39,7 @@ export async function readSession(cookie: string | undefined, nowS: number): Pro
     userId: payload.userId,
     sessionVersion: Number(payload.sessionVersion),
     labId: typeof payload.labId === 'string' ? payload.labId : null,
+    sessionId: typeof payload.sessionId === 'string' ? payload.sessionId : null,
     signedInAt: payload.signedInAt,
     issuedAt: Number(payload.iat),
   };
@@ -48,10 +51,10 @@ export async function renewedSession(session: Session, nowS: number): Promise<st
 }
 
 export function writeSession(session: Omit<Session, 'issuedAt'>, nowS: number): Promise<string> {
-  const { userId, sessionVersion, labId, signedInAt } = session;
+  const { userId, sessionVersion, labId, signedInAt, sessionId = null } = session;
   const leftS = Math.max(1, signedInAt + SESSION_ABSOLUTE_S - nowS);
   return encode({
-    token: { sub: userId, userId, sessionVersion, labId, signedInAt },
+    token: { sub: userId, userId, sessionVersion, labId, signedInAt, sessionId },
     secret: sessionSecret(),
     maxAge: Math.min(SESSION_IDLE_S, leftS),
   });

@@ -16,6 +16,7 @@ import {
   type Account,
   type LabOfPerson,
 } from '@/models/queries/find-account';
+import { noteSession } from '@/models/queries/sessions';
 import { bearerToken, hashToken } from './tokens';
 import { cookieIn, LAB_COOKIE, readSession, sessionCookieName, type Session } from './session-cookie';
 
@@ -48,8 +49,11 @@ export async function viewerOfSession(
 ): Promise<Viewer | null> {
   const session = await readSession(sessionCookie, Date.now() / 1000);
   if (!session) return null;
-  const account = await findAccount(session.userId);
-  if (!account || account.sessionVersion !== session.sessionVersion) return null;
+  const [account, isOpen] = await Promise.all([
+    findAccount(session.userId),
+    session.sessionId ? noteSession(session.userId, session.sessionId) : true,
+  ]);
+  if (!account || !isOpen || account.sessionVersion !== session.sessionVersion) return null;
   const lab =
     account.labs.find(({ id }) => id === labCookie) ??
     account.labs.find(({ id }) => id === session.labId) ??

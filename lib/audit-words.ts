@@ -5,6 +5,8 @@ export const AUDIT_WORDS: Record<string, string> = {
   'member.invited-again': 'made a new invitation for',
   'member.removed': 'removed from the laboratory',
   'member.roles-changed': 'changed the roles of',
+  'member.session-ended': 'ended a session of',
+  'user.session-ended': 'ended a session of their own',
   'member.sessions-ended': 'ended the sessions of',
   'member.reset-started': 'had a link for a new password sent to',
   'sign-in.failed': 'failed to sign in',

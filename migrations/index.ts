@@ -11,6 +11,7 @@ import * as addFlowDetails from './20261201153000-add-flow-details';
 import * as addRehearsals from './20261201154000-add-rehearsals';
 import * as rememberWhatAKeyMade from './20261201155000-remember-what-a-key-made';
 import * as addFlowParts from './20261202140000-add-flow-parts';
+import * as addSessions from './20261202130000-add-sessions';
 import * as addExports from './20261201152000-add-exports';
 import * as mixKnownCandidates from './20261202110000-mix-known-candidates';
 
@@ -36,5 +37,6 @@ export const migrations: Migration[] = [
   { name: '20261201154000-add-rehearsals', ...addRehearsals },
   { name: '20261201155000-remember-what-a-key-made', ...rememberWhatAKeyMade },
   { name: '20261202110000-mix-known-candidates', ...mixKnownCandidates },
+  { name: '20261202130000-add-sessions', ...addSessions },
   { name: '20261202140000-add-flow-parts', ...addFlowParts },
 ];

@@ -1,5 +1,5 @@
 import { setTimeout as pause } from 'node:timers/promises';
-import { ConnectionAcquireTimeoutError, ConnectionError } from 'sequelize';
+import { ConnectionAcquireTimeoutError, ConnectionError, DatabaseError } from 'sequelize';
 
 /**
  * SQLSTATE of a server that is stopping, starting or recovering (57P), of a connection that is gone (08), of one that
@@ -15,6 +15,9 @@ const NETWORK = new Set(['ECONNREFUSED', 'ECONNRESET', 'EPIPE', 'ETIMEDOUT']);
 export function isDatabaseAway(thrown: unknown): boolean {
   if (thrown instanceof ConnectionAcquireTimeoutError) return false;
   if (thrown instanceof ConnectionError) return true;
+  // A line that is cut under a question says of itself only that it was reset.
+  if (thrown instanceof DatabaseError && NETWORK.has(String((thrown.original as { code?: unknown }).code)))
+    return true;
   const error = thrown as { code?: unknown; message?: unknown; original?: unknown; parent?: unknown } | null;
   if (!error || typeof error !== 'object') return false;
   const code = typeof error.code === 'string' ? error.code : '';

@@ -1,4 +1,5 @@
 import pg from 'pg';
+import { ConnectionError } from 'sequelize';
 import { databaseUrl } from '@/lib/env';
 
 /**
@@ -54,22 +55,27 @@ async function open(): Promise<pg.Client> {
   return client;
 }
 
+/** Questions about locks can't be wrong: what fails is the way to the database. */
+function asAway(cause: Error): never {
+  throw new ConnectionError(cause);
+}
+
 /**
  * Takes the lock when no other process has it. The caller sees to it that its own process asks for
  * a name once at a time: to PostgreSQL all of a connection's locks are one owner's.
  */
 export async function trySessionLock(name: string): Promise<boolean> {
-  const client = await connection();
-  const result = await client.query<{ taken: boolean }>(
-    'SELECT pg_try_advisory_lock(hashtextextended($1, 0)) AS taken',
-    [name],
-  );
+  const client = await connection().catch(asAway);
+  const result = await client
+    .query<{ taken: boolean }>('SELECT pg_try_advisory_lock(hashtextextended($1, 0)) AS taken', [name])
+    .catch(asAway);
   return result.rows[0].taken;
 }
 
 /** Asks whichever process holds the lock to let go of it, if it can. */
 export async function askForSessionLock(name: string): Promise<void> {
-  await (await connection()).query('SELECT pg_notify($1, $2)', [WANTED, name]);
+  const client = await connection().catch(asAway);
+  await client.query('SELECT pg_notify($1, $2)', [WANTED, name]).catch(asAway);
 }
 
 export async function releaseSessionLock(name: string): Promise<void> {

@@ -7,6 +7,7 @@ import { dropKeptMail } from '@/jobs/mail/keep-mail';
 import { limit } from '@/lib/env';
 import { expireExports } from '@/models/queries/exports';
 import { dropOldMails } from '@/models/queries/mails';
+import { dropOldSessions } from '@/models/queries/sessions';
 import { forgetEmptyFolders, reconcileUploads } from './uploads/reconcile-uploads';
 
 const EVERY_MS = 3_600_000;
@@ -27,6 +28,7 @@ export function startHousekeeping(): void {
       await forgetEmptyFolders();
       await dropOldWindows();
       await dropOldKeys();
+      await dropOldSessions();
       await dropOldMails(MAIL_DAYS);
       await dropKeptMail(MAIL_DAYS);
       for (const id of await expireExports()) await dropExport(id);

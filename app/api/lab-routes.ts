@@ -41,6 +41,26 @@ export const LAB_ROUTES = {
     status: 201,
     idempotent: false,
   },
+  'GET /people/{memberId}/sessions': {
+    action: 'manage-people',
+    summary: 'Where a member is signed in',
+    answer: listOf(lab.sessionViewSchema),
+  },
+  'DELETE /people/{memberId}/sessions/{sessionId}': {
+    action: 'manage-people',
+    summary: 'End one session of a member',
+    status: 204,
+  },
+  'GET /sessions': {
+    action: 'own-account',
+    summary: 'Where you are signed in',
+    answer: listOf(lab.sessionViewSchema),
+  },
+  'DELETE /sessions/{sessionId}': {
+    action: 'own-account',
+    summary: 'End one of your own sessions',
+    status: 204,
+  },
   'POST /people/{memberId}/sessions-end': {
     action: 'manage-people',
     summary: 'End every session of a member',

@@ -1,6 +1,7 @@
 'use client';
 
 import { useState } from 'react';
+import { SessionTable } from '@/components/account/session-table';
 import { api } from '@/components/data/api-client';
 import { Button } from '@/components/ui/button';
 import { Dialog } from '@/components/ui/dialog';
@@ -44,10 +45,8 @@ export function AccountDialog({ member, onClose }: { member: MemberView; onClose
       }
     >
       <div className="flex flex-col items-start gap-2 pt-1">
-        <p>
-          A lost device, or a place left signed in: their sessions end everywhere, and they sign in again.
-          Tokens stay.
-        </p>
+        <p>A lost device, or a place left signed in: end that session, or all of them. Tokens stay.</p>
+        <SessionTable key={done} source={`/api/v1/people/${member.id}/sessions`} />
         <Button busy={busy === 'sessions-end'} onClick={() => void act('sessions-end')}>
           End their sessions
         </Button>

@@ -17,6 +17,7 @@ import { runCreateSchema, type RunCreate } from '@/lib/schemas/run';
 import { suspiciousConditions } from '@/lib/suspicious-conditions';
 import { splitTags } from '@/lib/tags';
 import { deriveRun } from '@/tracking/flow/derive-run';
+import { ConflictChoice, type StoredVersion } from './conflict-choice';
 import { ConditionsFields } from './conditions-fields';
 import { DerivedFold } from './derived-fold';
 import { DerivedPanel } from './derived-panel';
@@ -25,7 +26,14 @@ import { RunNotes } from './run-notes';
 /** What saving a run came to. */
 export type SaveRunResult =
   | { ok: true; revision: number; href?: string }
-  | { ok: false; code: string; detail: string; errors: FieldError[] };
+  | {
+      ok: false;
+      code: string;
+      detail: string;
+      errors: FieldError[];
+      /** What is stored now, when somebody else has changed the run meanwhile. */
+      stored?: StoredVersion;
+    };
 
 interface RunFormProps {
   /** What stands above the form: title and tabs. */
@@ -58,6 +66,7 @@ export function RunForm(props: RunFormProps) {
   const [left, setLeft] = useState<ReadonlySet<string>>(new Set());
   const [confirmed, setConfirmed] = useState<readonly string[]>([]);
   const [fromServer, setFromServer] = useState<{ detail: string; errors: FieldError[] } | null>(null);
+  const [stored, setStored] = useState<StoredVersion | null>(null);
   const [busy, setBusy] = useState(false);
   const readOnly = Boolean(props.readOnlyReason);
 
@@ -82,6 +91,10 @@ export function RunForm(props: RunFormProps) {
 
   async function submit(event: FormEvent) {
     event.preventDefault();
+    await saveOver(revision);
+  }
+
+  async function saveOver(over: number | null) {
     setLeft(new Set([...errors, ...slips].map(({ path }) => path).concat('name')));
     const run: RunCreate = {
       ...conditions,
@@ -103,7 +116,8 @@ export function RunForm(props: RunFormProps) {
     setBusy(true);
     setFromServer(null);
     try {
-      const result = await props.save(checked.data, revision);
+      const result = await props.save(checked.data, over);
+      setStored((!result.ok && result.stored) || null);
       if (!result.ok) {
         noticeRefusal(result.code);
         setFromServer(result);
@@ -190,6 +204,14 @@ export function RunForm(props: RunFormProps) {
             <div className="pt-3">
               <ErrorState live what={fromServer.detail} />
             </div>
+          ) : null}
+          {stored ? (
+            <ConflictChoice
+              stored={stored}
+              busy={busy}
+              onMine={() => void saveOver(stored.revision)}
+              onTheirs={() => window.location.reload()}
+            />
           ) : null}
           {props.readOnlyReason ? (
             <p className="pt-4 text-note text-ink-3">{props.readOnlyReason}</p>

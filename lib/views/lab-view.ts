@@ -75,6 +75,18 @@ export const workerViewSchema = z.object({
 });
 export type WorkerView = z.infer<typeof workerViewSchema>;
 
+/** A browser in which a person is signed in. */
+export const sessionViewSchema = z.object({
+  id: z.uuid(),
+  /** As in `Firefox on Linux`. */
+  device: z.string(),
+  signedInAt: z.iso.datetime(),
+  lastUsedAt: z.iso.datetime(),
+  /** The one that asks. */
+  own: z.boolean(),
+});
+export type SessionView = z.infer<typeof sessionViewSchema>;
+
 export const jobViewSchema = z.object({
   id: z.uuid(),
   kind: z.string(),

@@ -32,6 +32,19 @@ export async function setQuota(slug: string, bytes: number | null): Promise<numb
   return row && quotaOf(row.id);
 }
 
+/** Bytes of stacks that are there or on their way, and how many may be. */
+export async function quotaUse(
+  labId: string,
+  transaction?: Transaction,
+): Promise<{ keptBytes: number; quotaBytes: number }> {
+  const row = await selectRow<{ bytes: number }>(
+    `SELECT coalesce(sum(g.bytes), 0)::float8 AS bytes FROM recordings g WHERE g.lab_id = $1 AND ${KEPT_RECORDING}`,
+    [labId],
+    transaction,
+  );
+  return { keptBytes: row?.bytes ?? 0, quotaBytes: await quotaOf(labId, transaction) };
+}
+
 /**
  * Whether so many more bytes fit. The laboratory's row stays locked until the transaction ends, so
  * that two uploads begun side by side can't both take the same room, in whatever process.
@@ -44,13 +57,7 @@ export async function assertWithinQuota(
 ): Promise<void> {
   // Rows that refer to the laboratory can still be written meanwhile: their own lock is a weaker one.
   await selectRow('SELECT id FROM labs WHERE id = $1 FOR NO KEY UPDATE', [labId], transaction);
-  const quota = await quotaOf(labId, transaction);
-  const row = await selectRow<{ bytes: number }>(
-    `SELECT coalesce(sum(g.bytes), 0)::float8 AS bytes FROM recordings g WHERE g.lab_id = $1 AND ${KEPT_RECORDING}`,
-    [labId],
-    transaction,
-  );
-  const kept = row?.bytes ?? 0;
+  const { keptBytes: kept, quotaBytes: quota } = await quotaUse(labId, transaction);
   if (kept + bytes <= quota) return;
   throw new LabError(
     'STORAGE_FULL',

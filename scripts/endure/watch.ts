@@ -124,37 +124,37 @@ export function tellTables(before: TableSize[], after: TableSize[]): string {
 
 /** Bells of the queue are gone soon after they rang: more rows than this would be a leak. */
 const BELLS_MOST = 300;
-/** Halves with fewer new analyses than this say nothing about growth. */
-const ANALYSES_LEAST = 10;
-/** An analysis of the second half may take so many times the room of one of the first: pages fill unevenly. */
+/** Fewer rows than this at half-time say nothing: the empty tables weigh more. */
+const ROWS_LEAST = 2_000;
+/** A row may take so many times the room at the end that it took at half-time: pages fill unevenly. */
 const GROWTH_MOST = 1.6;
 
-const sum = (sizes: readonly TableSize[]) => sizes.reduce((bytes, size) => bytes + size.bytes, 0);
+const sum = (sizes: readonly TableSize[], of: 'bytes' | 'rows') =>
+  sizes.reduce((total, size) => total + size[of], 0);
 const rowsOf = (sizes: readonly TableSize[], name: string) =>
   sizes.find((size) => size.name === name)?.rows ?? 0;
 
 /**
- * Whether the database grows with what people make and not with time: room per analysis in both halves of the trial,
- * and the rows of the queue when all work is done. Growth beyond the bounds is a broken promise.
+ * Whether the database grows with what people make and not with time: room per row at half-time and at the end, and
+ * the rows of the queue when all work is done. Growth beyond the bounds is a broken promise.
  */
 export function tellGrowth(
   [start, middle, end]: readonly [TableSize[], TableSize[], TableSize[]],
   ledger: Ledger,
 ): string {
-  const half = (from: TableSize[], to: TableSize[]) => {
-    const analyses = rowsOf(to, 'public.analyses') - rowsOf(from, 'public.analyses');
-    return { analyses, perAnalysisMB: (sum(to) - sum(from)) / 2 ** 20 / Math.max(1, analyses) };
+  const roomUntil = (to: TableSize[]) => {
+    const rows = sum(to, 'rows') - sum(start, 'rows');
+    return { rows, perRow: (sum(to, 'bytes') - sum(start, 'bytes')) / Math.max(1, rows) };
   };
-  const [first, second] = [half(start, middle), half(middle, end)];
-  const enough = Math.min(first.analyses, second.analyses) >= ANALYSES_LEAST;
-  if (enough && second.perAnalysisMB > GROWTH_MOST * first.perAnalysisMB) {
+  const [half, whole] = [roomUntil(middle), roomUntil(end)];
+  if (half.rows >= ROWS_LEAST && whole.perRow > GROWTH_MOST * half.perRow) {
     ledger.broken(
-      `the database grew by ${first.perAnalysisMB.toFixed(2)} MB an analysis in the first half, by ${second.perAnalysisMB.toFixed(2)} MB in the second`,
+      `a row takes ${whole.perRow.toFixed(0)} bytes of the database at the end, ${half.perRow.toFixed(0)} at half-time`,
     );
   }
   const bells = rowsOf(end, 'pgboss.job');
   if (bells > BELLS_MOST) ledger.broken(`the queue keeps ${bells} rows when all work is done`);
-  const words = ({ analyses, perAnalysisMB }: ReturnType<typeof half>) =>
-    `${perAnalysisMB.toFixed(2)} MB an analysis (${analyses})`;
-  return `Room in the database: first half ${words(first)}, second half ${words(second)}; rows of the queue at the end: ${bells}`;
+  const words = ({ rows, perRow }: ReturnType<typeof roomUntil>) =>
+    `${perRow.toFixed(0)} bytes a row (${rows} rows)`;
+  return `Room in the database: at half-time ${words(half)}, at the end ${words(whole)}; rows of the queue at the end: ${bells}`;
 }

@@ -5,6 +5,7 @@ import type { RecordingView } from '@/lib/views/recording-view';
 import { closeDatabase } from '@/models/database';
 import { uploadStack } from '../helpers/analysed-recording';
 import { ApiScript, breakUpload, createUpload, patchUpload, uploadOffset } from '../helpers/api-client';
+import { patiently } from '../helpers/patiently';
 import { processesOf, sharedServer } from '../helpers/server';
 import { smallConditions, writeSmallStack } from '../helpers/small-stack';
 import { makeTestLab } from '../helpers/test-lab';
@@ -22,18 +23,6 @@ async function kill(name: string): Promise<void> {
     { withinMs: 20_000 },
   );
 }
-
-/** Asks until the web server answers again. */
-const patiently = <T>(ask: () => Promise<T>): Promise<T> =>
-  until(
-    () =>
-      ask().then(
-        (value) => ({ value }),
-        () => null,
-      ),
-    (answer) => answer !== null,
-    SLOW,
-  ).then((answer) => answer!.value);
 
 describe('processes killed in the middle of their work', () => {
   let script: ApiScript;

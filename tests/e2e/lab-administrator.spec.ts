@@ -4,6 +4,7 @@ import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { newId } from '@/lib/ids';
 import { models } from '@/models';
 import { closeDatabase } from '@/models/database';
+import { ApiScript } from '../helpers/api-client';
 import { makeRecording } from '../helpers/lab-rows';
 import { sharedServer } from '../helpers/server';
 import { makeTestLab, type TestLab } from '../helpers/test-lab';
@@ -159,11 +160,33 @@ describe('a lab administrator looks after accounts, files and work', () => {
     await signIn(invited.page, analyst);
     await page.goto('/lab');
     await rowOf(analyst.name).getByRole('button', { name: 'Account' }).click();
+    // Where they are signed in stands there, and nothing is left of it afterwards.
+    const sessions = page.getByRole('table', { name: 'Sessions' });
+    await sessions.getByText('Chromium on Linux').first().waitFor();
     await page.getByRole('button', { name: 'End their sessions' }).click();
     await page.getByText('Every session has ended.').waitFor();
+    await page.getByText('Not signed in anywhere.').waitFor();
     await page.getByRole('button', { name: 'Close' }).click();
     await invited.page.goto('/account');
     await invited.page.waitForURL((url) => url.pathname === '/sign-in');
+  });
+
+  it('revokes the token of a member, whose scripts are refused from then on', async () => {
+    const { page } = visit;
+    const { experimentalist } = lab.people;
+    const ask = () => new ApiScript(server.baseUrl, experimentalist.token).request('/api/v1/me');
+    expect((await ask()).status).toBe(200);
+    await page.goto('/lab/tokens');
+    await rowOf(experimentalist.name).getByRole('button', { name: 'Revoke' }).click();
+    await page.getByRole('button', { name: 'Revoke it' }).click();
+    await rowOf(experimentalist.name).getByText('revoked').waitFor();
+    expect((await ask()).status).toBe(401);
+    await page.goto('/lab/audit');
+    await page
+      .getByRole('table', { name: 'Audit trail' })
+      .getByText(/revoked/)
+      .first()
+      .waitFor();
   });
 
   it('finds the mail with which a person who forgot their password chooses a new one', async () => {

@@ -49,20 +49,24 @@ export const FAULT_ROWS: readonly FaultRow[] = [
   {
     row: 'F7',
     fault: 'disk of uploads full',
-    tests: [],
-    why: 'a full disk is simulated by `npm run endure` only',
+    tests: [
+      ['app/api/broken-disks.test.ts', 'F7 an upload that would not fit is refused before its first byte'],
+      ['app/api/broken-disks.test.ts', 'F7 a disk that is full at the first, second, ... page'],
+    ],
   },
   {
     row: 'F8',
     fault: 'disk of the database full',
-    tests: [],
-    why: 'made by `npm run endure` only: it needs a PostgreSQL of its own',
+    tests: [['api/killed-database.test.ts', 'F8 a disk of the database that is full']],
   },
   {
     row: 'F9',
     fault: 'PostgreSQL restarted',
     tests: [
       ['jobs/worker.test.ts', 'a database that goes away for a moment does not end the worker'],
+      ['api/killed-database.test.ts', 'in the middle of an upload: it goes on'],
+      ['api/killed-database.test.ts', 'in the middle of detection: the analysis finishes by itself'],
+      ['api/killed-database.test.ts', 'in the middle of a correction: it is stored once'],
       [
         'scripts/private-cluster.test.ts',
         'comes back by itself with every committed row when the server is killed',
@@ -72,8 +76,7 @@ export const FAULT_ROWS: readonly FaultRow[] = [
   {
     row: 'F10',
     fault: 'database down at the start',
-    tests: [],
-    why: 'the health of a server without its database is tested at the start script only',
+    tests: [['api/web-server-alone.test.ts', 'F10 started before its database']],
   },
   {
     row: 'F11',
@@ -133,10 +136,25 @@ export const FAULT_ROWS: readonly FaultRow[] = [
   {
     row: 'F23',
     fault: 'reviewer without a network',
-    tests: [],
-    why: 'the queue of decisions has no test of its own yet',
+    tests: [
+      [
+        'components/review/verdict-outbox.test.ts',
+        'none is lost or doubled whatever requests and answers are lost',
+      ],
+      [
+        'e2e/review.spec.ts',
+        'thirty of them by keyboard alone, three while the link is lost, each stored once',
+      ],
+      ['e2e/review-day.spec.ts', 'what they do while the link is lost is kept and shown, and stored'],
+    ],
   },
-  { row: 'F24', fault: 'export killed half-way', tests: [], why: 'exports have no test of being killed yet' },
+  {
+    row: 'F24',
+    fault: 'export killed half-way',
+    tests: [
+      ['jobs/exports/killed.test.ts', 'F24 a package whose worker was killed at its first, second, ...'],
+    ],
+  },
   {
     row: 'F25',
     fault: 'stored file damaged later',
@@ -151,8 +169,7 @@ export const FAULT_ROWS: readonly FaultRow[] = [
   {
     row: 'F28',
     fault: 'session that ends in the middle of a form',
-    tests: [],
-    why: 'the dialog is there; no browser test drives it yet',
+    tests: [['e2e/forms.spec.ts', 'F28 a session that ends in the middle of it']],
   },
   {
     row: 'F29',
@@ -164,8 +181,22 @@ export const FAULT_ROWS: readonly FaultRow[] = [
   {
     row: 'F30',
     fault: 'restore from a backup',
-    tests: [['scripts/backup-and-restore.test.ts', 'brings back every row and every byte of every file']],
+    tests: [
+      ['scripts/backup-and-restore.test.ts', 'brings back every row and every byte of every file'],
+      ['scripts/backup-and-restore.test.ts', 'make the same data packages, byte for byte'],
+    ],
   },
-  { row: 'F31', fault: 'store read-only', tests: [], why: 'no test mounts a disk read-only yet' },
-  { row: 'F32', fault: 'no file descriptors left', tests: [], why: 'made by `npm run endure` only' },
+  {
+    row: 'F31',
+    fault: 'store read-only or gone',
+    tests: [
+      ['app/api/broken-disks.test.ts', 'F31 a store that has become read-only'],
+      ['app/api/broken-disks.test.ts', 'F31 a store that is away'],
+    ],
+  },
+  {
+    row: 'F32',
+    fault: 'no file descriptors left',
+    tests: [['api/web-server-alone.test.ts', 'F32 without a descriptor left']],
+  },
 ];

@@ -21,6 +21,7 @@ export async function startProduct(options: {
   DATABASE_URL?: string;
   /** Of the owner of the tables, where the product is to run by another role. */
   DATABASE_OWNER_URL?: string;
+  BEADLINE_LIMIT_QUIET_SECONDS?: string;
   workers: number;
 }): Promise<Product> {
   const { workers, ...settings } = options;

@@ -1,11 +1,12 @@
 import { execFile } from 'node:child_process';
-import { mkdtemp, readFile, rm, writeFile } from 'node:fs/promises';
+import { mkdtemp, readdir, readFile, rm, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
-import { join } from 'node:path';
+import { basename, dirname, join } from 'node:path';
 import { promisify } from 'node:util';
 import { afterAll, afterEach, beforeAll, expect, test } from 'vitest';
 import { closeDoorbell } from '@/jobs/doorbell';
 import { stackFile } from '@/jobs/stack-folder';
+import { storeFile } from '@/jobs/stack-store';
 import { startAnalysis } from '@/jobs/start-analysis';
 import { models } from '@/models';
 import type { Analysis } from '@/models/analysis';
@@ -17,6 +18,7 @@ import { concatSpots, decodeSpots, encodeSpots } from '@/tracking/spots';
 import { arriveRecording, checked, CONDITIONS } from '../helpers/demo-recording';
 import { freshDatabase, type FreshDatabase } from '../helpers/fresh-database';
 import { makeLab, type LabRows } from '../helpers/lab-rows';
+import { fakeStore } from '../helpers/object-store';
 import { serverTables } from '../helpers/server-tables';
 import { until } from '../helpers/until';
 import { bundle, startWorkerProcess, type WorkerProcessHandle } from '../helpers/worker-process';
@@ -61,11 +63,17 @@ afterAll(async () => {
   process.env.BEADLINE_DATA = dataBefore;
 });
 
-function analyse({ chunkFrames }: { chunkFrames: number }): Promise<Analysis> {
+function analyse({
+  chunkFrames,
+  of = recording,
+}: {
+  chunkFrames: number;
+  of?: Recording;
+}): Promise<Analysis> {
   const { labId, userId } = lab;
   return getSequelize().transaction((transaction) =>
     startAnalysis(
-      { labId, recording, conditions: CONDITIONS, recipeRequest: {}, userId, chunkFrames },
+      { labId, recording: of, conditions: CONDITIONS, recipeRequest: {}, userId, chunkFrames },
       transaction,
     ),
   );
@@ -127,6 +135,44 @@ test(
       const analysis = await finished(await analyse({ chunkFrames }));
       expect(await allSpots(analysis)).toEqual(expectedSpots);
       expect(await serverTables(analysis)).toEqual(expected);
+    }
+  },
+  3 * MINUTES,
+);
+
+test(
+  'two workers on folders of their own, with one database and one object store, finish one analysis with the same bytes',
+  async () => {
+    const store = await fakeStore();
+    const folders = [join(folder, 'here'), join(folder, 'there')];
+    process.env.BEADLINE_S3_URL = store.url;
+    try {
+      for (const own of folders) work({ BEADLINE_DATA: own, BEADLINE_S3_URL: store.url });
+      const ids = await Promise.all(workers.map((worker) => worker.id()));
+      const stack = await readFile(stackFile(recording.id));
+      const apart = await checked(
+        await arriveRecording(lab, async (path) => {
+          await writeFile(path, stack);
+          await storeFile(basename(dirname(path)), path, path);
+        }),
+      );
+      expect(apart).toMatchObject({ state: 'ready', sha256: recording.sha256 });
+      const analysis = await finished(await analyse({ chunkFrames: 2, of: apart }));
+      expect(await allSpots(analysis)).toEqual(expectedSpots);
+      expect(await serverTables(analysis)).toEqual(expected);
+      const pieces = await models().JobRun.findAll({
+        where: { subjectId: analysis.id, kind: 'detect-spots' },
+      });
+      expect(new Set(pieces.map(({ workerId }) => workerId))).toEqual(new Set(ids));
+      // Neither folder keeps a copy of the stack: what they share is the store.
+      for (const own of folders) {
+        const names = await readdir(own, { recursive: true }).catch(() => []);
+        expect(names.filter((name) => name.endsWith('stack.bin'))).toEqual([]);
+      }
+    } finally {
+      await endWorkers();
+      delete process.env.BEADLINE_S3_URL;
+      await store.end();
     }
   },
   3 * MINUTES,

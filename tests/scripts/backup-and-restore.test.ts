@@ -17,13 +17,18 @@ import { dirname, join, relative } from 'node:path';
 import { promisify } from 'node:util';
 import pg from 'pg';
 import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
+import { closeDoorbell } from '@/jobs/doorbell';
+import { EXPORT_FORMATS } from '@/lib/exports/export-facts';
 import { newId } from '@/lib/ids';
+import { closeDatabase } from '@/models/database';
 import { models } from '@/models';
 import { checkBackup, MANIFEST, MANIFEST_HASH } from '@/scripts/platform/backup-manifest.mjs';
 import { startPrivateCluster } from '@/scripts/platform/private-cluster.mjs';
 import { createSupervisor } from '@/scripts/platform/supervise.mjs';
+import { buildPackageOf } from '../helpers/built-package';
 import { dropDatabase, freshDatabase, type FreshDatabase } from '../helpers/fresh-database';
 import { makeAnalysis, makeLab, makeRecording } from '../helpers/lab-rows';
+import { measuredAnalysis } from '../helpers/measured-analysis';
 
 vi.setConfig({ testTimeout: 180_000 });
 
@@ -239,6 +244,40 @@ describe('a restore refuses', () => {
   });
 });
 
+describe('results after a restore into an empty folder', () => {
+  it('make the same data packages, byte for byte, in every format', async () => {
+    const [from, to] = [join(folder, 'measured'), join(folder, 'measured-again')];
+    const dataBefore = process.env.BEADLINE_DATA;
+    mkdirSync(from);
+    process.env.BEADLINE_DATA = from;
+    try {
+      const lab = await makeLab();
+      const { id } = await measuredAnalysis(lab);
+      const wish = { analyses: [id], formats: [...EXPORT_FORMATS] };
+      const before = await buildPackageOf(lab, wish);
+      await closeDoorbell();
+      const file = join(folder, 'measured.backup');
+      const made = await run('backup', [file], { BEADLINE_DATA: from, DATABASE_URL: database.url });
+      expect(made).toMatchObject({ code: 0 });
+      const url = await emptyDatabase();
+      expect(await run('restore', [file], { BEADLINE_DATA: to, DATABASE_URL: url })).toMatchObject({
+        code: 0,
+      });
+      await closeDatabase();
+      process.env.DATABASE_URL = url;
+      process.env.BEADLINE_DATA = to;
+      const after = await buildPackageOf(lab, wish);
+      expect(after.view.id).not.toBe(before.view.id);
+      expect(readFileSync(after.path).equals(readFileSync(before.path))).toBe(true);
+    } finally {
+      await closeDoorbell();
+      await closeDatabase();
+      process.env.DATABASE_URL = database.url;
+      process.env.BEADLINE_DATA = dataBefore;
+    }
+  });
+});
+
 describe('with the private cluster', () => {
   it('rows come back from a cluster that stands and from one that runs', async () => {
     const lab = join(folder, 'private');
@@ -278,6 +317,6 @@ describe('with the private cluster', () => {
     const env = { BEADLINE_DATA: join(folder, 'nothing'), DATABASE_URL: undefined };
     const { code, stderr } = await run('backup', [join(folder, 'x')], env);
     expect([code, stderr]).toEqual([2, expect.stringMatching(/There is no Beadline in/)]);
-    expect(await models().Lab.count()).toBe(1);
+    expect(await models().Lab.count()).toBeGreaterThan(0);
   });
 });

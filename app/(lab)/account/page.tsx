@@ -4,6 +4,7 @@ import { may } from '@/auth/viewer';
 import { EndSessions } from '@/components/account/end-sessions';
 import { NoticesForm } from '@/components/account/notices-form';
 import { ReviewKeysForm } from '@/components/account/review-keys-form';
+import { SessionTable } from '@/components/account/session-table';
 import { PasswordForm } from '@/components/account/password-form';
 import { PathThread } from '@/components/ui/path-thread';
 import { Facts, PageTitle, Section, Sheet } from '@/components/ui/sheet';
@@ -50,6 +51,7 @@ export default async function AccountPage() {
           <PasswordForm change={changeOwnPassword} />
         </Section>
         <Section title="Sessions" count="on this and other devices">
+          <SessionTable source="/api/v1/sessions" />
           <EndSessions end={endOwnSessions} />
         </Section>
       </Sheet>

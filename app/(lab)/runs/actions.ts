@@ -27,8 +27,12 @@ const patch = memberAction('edit-run', patchSchema, async ({ viewer, input }) =>
 
 function resultOf(result: ActionResult<RunView>, hrefOf?: (run: RunView) => string): SaveRunResult {
   if (!result.ok) {
-    const { code, detail, errors } = result.problem;
-    return { ok: false, code, detail, errors };
+    const { code, detail, errors, current } = result.problem;
+    const stored = current as RunView | undefined;
+    return {
+      ...{ ok: false, code, detail, errors },
+      ...(stored ? { stored: { revision: stored.revision, at: stored.updatedAt } } : {}),
+    };
   }
   return { ok: true, revision: result.data.revision, href: hrefOf?.(result.data) };
 }

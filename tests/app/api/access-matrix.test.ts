@@ -8,6 +8,7 @@ import { models } from '@/models';
 import { addExport } from '@/models/queries/exports';
 import { addMail } from '@/models/queries/mails';
 import { addRehearsal } from '@/models/queries/rehearsal-work';
+import { addSession } from '@/models/queries/sessions';
 import { closeSessionLocks } from '@/models/session-locks';
 import { call, routeModule, routePaths, webSettings } from '../../helpers/call-route';
 import { freshDatabase, type FreshDatabase } from '../../helpers/fresh-database';
@@ -65,6 +66,7 @@ async function makeThings(): Promise<Things> {
     userId: guest.id,
     roles: ['annotator'],
   });
+  const sessionId = await addSession(guest.id, 1, 'test');
   const token = await models().ApiToken.create({
     id: newId(),
     labId: own.labId,
@@ -139,6 +141,7 @@ async function makeThings(): Promise<Things> {
     candidateId,
     assignmentId,
     memberId: membership.id,
+    sessionId,
     tokenId: token.id,
     upload: upload.id,
     exportId: exported,

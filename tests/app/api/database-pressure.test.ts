@@ -1,3 +1,4 @@
+import { DatabaseError } from 'sequelize';
 import { afterAll, afterEach, beforeAll, describe, expect, it, vi } from 'vitest';
 import { once } from '@/auth/idempotency';
 import { closeDoorbell } from '@/jobs/doorbell';
@@ -168,6 +169,10 @@ describe('a database that is away', () => {
     expect(isDatabaseAway(cut)).toBe(true);
     expect(isDatabaseAway({ original: { code: '57P03' } })).toBe(true);
     expect(isDatabaseAway({ original: { code: '53100' } })).toBe(true);
+    const reset = Object.assign(new Error('read ECONNRESET'), { code: 'ECONNRESET', sql: '' });
+    expect(isDatabaseAway(new DatabaseError(reset))).toBe(true);
+    // The same words of a sender who has gone.
+    expect(isDatabaseAway(reset)).toBe(false);
     expect(isDatabaseAway({ code: '23505' })).toBe(false);
     expect(isDatabaseAway(null)).toBe(false);
   });

@@ -2,10 +2,12 @@ import type { Metadata } from 'next';
 import { Suspense } from 'react';
 import { may } from '@/auth/viewer';
 import { RecordingTable } from '@/components/recordings/recording-table';
+import { RoomLine } from '@/components/uploads/room-line';
 import { UploadPanel } from '@/components/uploads/upload-panel';
 import { PathThread } from '@/components/ui/path-thread';
 import { Section, Sheet } from '@/components/ui/sheet';
 import { countOf } from '@/lib/format/count';
+import { quotaUse } from '@/models/queries/quota';
 import { pathLevels } from '../../../path-levels';
 import { loadRun } from '../load-run';
 import { RunHead } from '../run-head';
@@ -29,6 +31,7 @@ export default async function RunRecordingsPage({ params }: Props) {
         {may(viewer, 'upload') ? (
           <div className="pt-4">
             <UploadPanel runId={run.id} />
+            <RoomLine {...await quotaUse(viewer.labId)} />
           </div>
         ) : null}
         <Suspense>
