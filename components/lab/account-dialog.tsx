@@ -1,5 +1,6 @@
 'use client';
 
+import { useQueryClient } from '@tanstack/react-query';
 import { useState } from 'react';
 import { SessionTable } from '@/components/account/session-table';
 import { api } from '@/components/data/api-client';
@@ -17,6 +18,7 @@ const DONE: Record<Act, string> = {
 
 /** Help with a member's account: neither act shows or sets a password. */
 export function AccountDialog({ member, onClose }: { member: MemberView; onClose: () => void }) {
+  const client = useQueryClient();
   const [busy, setBusy] = useState<Act | null>(null);
   const [done, setDone] = useState<Act | null>(null);
   const [problem, setProblem] = useState<string | null>(null);
@@ -27,6 +29,7 @@ export function AccountDialog({ member, onClose }: { member: MemberView; onClose
     try {
       await api(`/api/v1/people/${member.id}/${which}`, { method: 'POST' });
       setDone(which);
+      await client.invalidateQueries({ queryKey: ['sessions'] });
     } catch (error) {
       setProblem(error instanceof Error ? error.message : 'That did not work.');
     } finally {
@@ -46,7 +49,7 @@ export function AccountDialog({ member, onClose }: { member: MemberView; onClose
     >
       <div className="flex flex-col items-start gap-2 pt-1">
         <p>A lost device, or a place left signed in: end that session, or all of them. Tokens stay.</p>
-        <SessionTable key={done} source={`/api/v1/people/${member.id}/sessions`} />
+        <SessionTable source={`/api/v1/people/${member.id}/sessions`} />
         <Button busy={busy === 'sessions-end'} onClick={() => void act('sessions-end')}>
           End their sessions
         </Button>
