@@ -128,7 +128,8 @@ export const FAULTS: Record<string, { weight: number; run: Fault }> = {
     weight: 2,
     run: async ({ product }) => {
       const rows = await onDatabase<{ pid: number }>(
-        product.databaseUrl,
+        // A role may end its own connections only.
+        product.applicationUrl,
         `SELECT pid FROM pg_stat_activity WHERE datname = current_database() AND pid <> pg_backend_pid() AND usename = current_user
            AND pg_terminate_backend(pid)`,
       ).catch(() => []);

@@ -3,13 +3,16 @@ import { join } from 'node:path';
 import { rootDir } from '@/lib/env';
 import { freePort } from '@/scripts/platform/free-port.mjs';
 import { readRunning } from '@/scripts/platform/running.mjs';
-import { privateDatabaseUrl, readSecrets } from '@/scripts/platform/secrets.mjs';
+import { applicationUrl, privateDatabaseUrl, readSecrets } from '@/scripts/platform/secrets.mjs';
 
 /** The whole product on a data folder of its own, with its private PostgreSQL. */
 export interface EnduringProduct {
   port: number;
   dataDir: string;
+  /** Of the owner of the tables. */
   databaseUrl: string;
+  /** Of the role by which web server and workers run. */
+  applicationUrl: string;
   /** Numbers of its processes by name; null between two starts. */
   pids(): Record<string, number | null>;
   stop(): Promise<void>;
@@ -50,6 +53,7 @@ export async function startProduct(
     port,
     dataDir,
     databaseUrl: privateDatabaseUrl(secrets),
+    applicationUrl: applicationUrl(secrets),
     pids: () =>
       Object.fromEntries((readRunning(dataDir)?.children ?? []).map(({ name, pid }) => [name, pid])),
     async stop() {
