@@ -47,7 +47,9 @@ export function watchProcesses(product: EnduringProduct) {
 
 function resident(pid: number): number | null {
   try {
-    return Number(/^VmRSS:\s+(\d+) kB/m.exec(readFileSync(`/proc/${pid}/status`, 'latin1'))?.[1]) / MB;
+    // A process that has just been killed has a status, but no memory any more.
+    const found = /^VmRSS:\s+(\d+) kB/m.exec(readFileSync(`/proc/${pid}/status`, 'latin1'));
+    return found ? Number(found[1]) / MB : null;
   } catch {
     return null;
   }
