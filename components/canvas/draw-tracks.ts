@@ -12,7 +12,7 @@ import {
   THREAD_PX,
   type WellColours,
 } from './stroke-style';
-import { FREE, TRAPPED, trailAt, UNDECIDED, UNKNOWN, type TrackBlock } from './track-block';
+import { FREE, TRAPPED, UNDECIDED, UNKNOWN, type TrackBlock } from './track-block';
 import type { Size, ViewBox } from './view-box';
 
 export interface DrawTracksOptions {
@@ -43,17 +43,17 @@ export function drawTracks(ctx: Context2d, block: TrackBlock, options: DrawTrack
   ctx.lineJoin = 'round';
   drawHalo(ctx, block, trails, options);
   for (const population of [UNKNOWN, UNDECIDED]) {
-    drawDashed(ctx, linesOf(block, trails, population), colours.undecided);
+    drawDashed(ctx, linesOf(trails, population), colours.undecided);
   }
-  drawFree(ctx, linesOf(block, trails, FREE), colours.free);
+  drawFree(ctx, linesOf(trails, FREE), colours.free);
   drawTrapped(ctx, block, trails, options);
 }
 
-function linesOf(block: TrackBlock, trails: ProjectedTrails, population: number): ScreenLine[] {
+function linesOf(trails: ProjectedTrails, wanted: number): ScreenLine[] {
   const lines: ScreenLine[] = [];
-  const { x, y, start, index, count } = trails;
+  const { x, y, start, population, count } = trails;
   for (let i = 0; i < count; i += 1) {
-    if (block.population[index[i]] === population) lines.push({ x, y, from: start[i], to: start[i + 1] });
+    if (population[i] === wanted) lines.push({ x, y, from: start[i], to: start[i + 1] });
   }
   return lines;
 }
@@ -113,7 +113,7 @@ function drawTrapped(
   options: DrawTracksOptions,
 ): void {
   const { colours, view } = options;
-  const lines = linesOf(block, trails, TRAPPED);
+  const lines = linesOf(trails, TRAPPED);
   strokeLines(ctx, lines, CASING, TRAPPED_CASING_PX);
   strokeLines(ctx, lines, colours.trapped, THREAD_PX);
   ctx.fillStyle = colours.trapped;
@@ -130,14 +130,11 @@ function drawTrapped(
     );
     return;
   }
-  const trail = { first: 0, last: 0 };
   for (let i = 0; i < trails.count; i += 1) {
-    const track = trails.index[i];
-    if (block.population[track] !== TRAPPED) continue;
-    if (!trailAt(block, track, options.frame, options.trailFrames, trail)) continue;
+    if (trails.population[i] !== TRAPPED) continue;
     ctx.beginPath();
     // One bead per measured position; bridged frames are thread alone.
-    for (let k = trail.first; k <= trail.last; k += 1) {
+    for (let k = trails.first[i]; k <= trails.last[i]; k += 1) {
       if (block.bridged[k]) continue;
       bead(block.x[k] * view.scale + view.offsetX, block.y[k] * view.scale + view.offsetY);
     }
@@ -163,6 +160,5 @@ function drawHalo(
     linePath(ctx, { x, y, from: start[i], to: start[i + 1] });
     ctx.stroke();
     ctx.restore();
-    return;
   }
 }

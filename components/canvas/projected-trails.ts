@@ -3,12 +3,18 @@ import type { Size, ViewBox } from './view-box';
 
 /**
  * Trails of one frame on the screen. Points of trail `i` are `start[i] .. start[i + 1] - 1`, oldest
- * first; `index[i]` is its track in the block.
+ * first; `index[i]` is its track in the block. A track whose class changes within the trail, because a person gave
+ * one to a stretch of it, has a trail for each class, the next beginning where the one before ends.
  */
 export interface ProjectedTrails {
   count: number;
   index: Uint32Array;
   start: Uint32Array;
+  /** Class of the trail, codes of the block. */
+  population: Uint8Array;
+  /** Points of the trail in the block's arrays, both included. */
+  first: Uint32Array;
+  last: Uint32Array;
   x: Float32Array;
   y: Float32Array;
 }
@@ -21,13 +27,32 @@ const MERGE_PX = 4;
 const STRAIGHT_PX = 0.4;
 const STRAIGHT_LENGTH_PX = 40;
 
-let room: ProjectedTrails = {
+const roomFor = (trails: number, points: number): ProjectedTrails => ({
   count: 0,
-  index: new Uint32Array(0),
-  start: new Uint32Array(1),
-  x: new Float32Array(0),
-  y: new Float32Array(0),
-};
+  index: new Uint32Array(trails),
+  start: new Uint32Array(trails + 1),
+  population: new Uint8Array(trails),
+  first: new Uint32Array(trails),
+  last: new Uint32Array(trails),
+  x: new Float32Array(points),
+  y: new Float32Array(points),
+});
+
+let room = roomFor(0, 0);
+
+/** Trails and points more than there are tracks and points: each stretch of a class may cut a trail twice. */
+function extraOf({ given }: TrackBlock): number {
+  let extra = 0;
+  for (const stretches of given.values()) extra += 2 * stretches.length;
+  return extra;
+}
+
+/** Class of a track in a frame: what a person gave that stretch, else that of the track. */
+export function classIn(block: TrackBlock, i: number, frame: number): number {
+  const stretches = block.given.size > 0 ? block.given.get(block.track[i]) : undefined;
+  for (const [from, to, code] of stretches ?? []) if (frame >= from && frame <= to) return code;
+  return block.population[i];
+}
 
 /**
  * Projects every trail that shows in the well. The answer is overwritten by the next call: a scrub
@@ -40,31 +65,40 @@ export function projectTrails(
   view: ViewBox,
   well: Size,
 ): ProjectedTrails {
-  if (room.index.length < block.count || room.x.length < block.frame.length) {
-    room = {
-      count: 0,
-      index: new Uint32Array(block.count),
-      start: new Uint32Array(block.count + 1),
-      x: new Float32Array(block.frame.length),
-      y: new Float32Array(block.frame.length),
-    };
-  }
-  const { index, start, x: xs, y: ys } = room;
+  const extra = extraOf(block);
+  const [trails, points] = [block.count + extra, block.frame.length + extra];
+  if (room.index.length < trails || room.x.length < points) room = roomFor(trails, points);
+  const { index, start, population, first, last, x: xs, y: ys } = room;
   const { scale, offsetX, offsetY } = view;
   const trail = { first: 0, last: 0 };
   let count = 0;
   let n = 0;
   for (let i = 0; i < block.count; i += 1) {
     if (!trailAt(block, i, frame, trailFrames, trail)) continue;
+    const parted = extra > 0 && block.given.has(block.track[i]);
+    for (let from = trail.first; from <= trail.last;) {
+      const kind = parted ? classIn(block, i, block.frame[from]) : block.population[i];
+      let to = parted ? from : trail.last;
+      while (to < trail.last && classIn(block, i, block.frame[to + 1]) === kind) to += 1;
+      // It begins on the last point of the class before: the line is not broken.
+      put(i, from > trail.first ? from - 1 : from, to, kind);
+      from = to + 1;
+    }
+  }
+  start[count] = n;
+  room.count = count;
+  return room;
+
+  function put(i: number, from: number, to: number, kind: number): void {
     const begin = n;
     let inside = false;
-    for (let k = trail.first; k <= trail.last; k += 1) {
+    for (let k = from; k <= to; k += 1) {
       const x = block.x[k] * scale + offsetX;
       const y = block.y[k] * scale + offsetY;
       inside ||= x > -EDGE_PX && x < well.width + EDGE_PX && y > -EDGE_PX && y < well.height + EDGE_PX;
       const near = n > begin && Math.abs(x - xs[n - 1]) < MERGE_PX && Math.abs(y - ys[n - 1]) < MERGE_PX;
       // The newest point always counts: it must sit on its spot.
-      if (near && k < trail.last) continue;
+      if (near && k < to) continue;
       // Where the path goes straight on, its end moves on instead of a point being added.
       if (n - begin >= 2 && isStraight(xs, ys, n, x, y)) n -= 1;
       xs[n] = x;
@@ -73,15 +107,15 @@ export function projectTrails(
     }
     if (!inside) {
       n = begin;
-      continue;
+      return;
     }
     index[count] = i;
     start[count] = begin;
+    population[count] = kind;
+    first[count] = from;
+    last[count] = to;
     count += 1;
   }
-  start[count] = n;
-  room.count = count;
-  return room;
 }
 
 /** Whether the last of `n` points lies on the line from the one before it to (x, y). */

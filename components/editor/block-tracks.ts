@@ -15,6 +15,8 @@ export interface BlockTrack {
   x: Float32Array;
   y: Float32Array;
   flags: Uint8Array;
+  /** Classes that a person gave to stretches, where they differ from what the block knows. */
+  given?: readonly (readonly [number, number, number])[];
 }
 
 /** Entry `i` of a block as a track of its own; arrays are views into the block. */
@@ -53,7 +55,9 @@ export function rebuildBlock(
     .map((track) => cut(track, block.from, block.to))
     .filter(({ frame }) => frame.length > 0);
   for (const { frame } of pieces) points += frame.length;
-  const made = emptyBlock(block, entries.length + pieces.length, points);
+  const given = new Map(block.given);
+  for (const track of others) if (track.given) given.set(track.track, track.given);
+  const made = emptyBlock({ ...block, given }, entries.length + pieces.length, points);
   const put = putter(made);
   for (const i of entries) put(trackOfBlock(block, i));
   pieces.forEach(put);

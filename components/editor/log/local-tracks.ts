@@ -2,6 +2,7 @@ import { UNDECIDED, type TrackBlock } from '@/components/canvas/track-block';
 import { applyOne, type RecordingExtent } from '@/tracking/corrections/apply-one';
 import { makesTrack, type Correction } from '@/tracking/corrections/correction';
 import { emptyTrack, NOT_GIVEN, type EditedTrack } from '@/tracking/corrections/edited-track';
+import { givenStretches } from '@/tracking/corrections/pieces';
 import { rebuildBlock, type BlockTrack } from '../block-tracks';
 
 /** A track as it is shown: its points, and the population that it is drawn with. */
@@ -240,6 +241,7 @@ function blockTrack(number: number, { points, population, pTrapped }: ShownTrack
     x: points.xPx,
     y: points.yPx,
     flags: points.flags,
+    given: givenStretches(points),
   };
 }
 

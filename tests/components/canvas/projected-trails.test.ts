@@ -60,3 +60,42 @@ describe('trails on the screen', () => {
     }
   });
 });
+
+describe('a stretch of a track with a class of its own', () => {
+  const block = {
+    ...randomBlock(3, 40, 40),
+    population: new Uint8Array(40).fill(1),
+  };
+  const view = { scale: 1, offsetX: 0, offsetY: 0 };
+  const wide = { width: 1e4, height: 1e4 };
+  const trail = { first: 0, last: 0 };
+  const long = Array.from({ length: 40 }, (_, i) => i).find(
+    (i) => trailAt(block, i, 25, 15, trail) && trail.last - trail.first > 8,
+  )!;
+
+  it('is a trail of its own that begins where the one before ends', () => {
+    trailAt(block, long, 25, 15, trail);
+    const [first, last] = [trail.first, trail.last];
+    const stretch = [block.frame[first + 3], block.frame[first + 5], 0] as const;
+    const given = new Map([[block.track[long], [stretch]]]);
+    const plain = projectTrails(block, 25, 15, view, wide).count;
+    const trails = projectTrails({ ...block, given }, 25, 15, view, wide);
+    expect(trails.count).toBe(plain + 2);
+    const mine = Array.from({ length: trails.count }, (_, t) => t).filter((t) => trails.index[t] === long);
+    expect(mine.map((t) => [trails.population[t], trails.first[t] - first, trails.last[t] - first])).toEqual([
+      [1, 0, 2],
+      [0, 2, 5],
+      [1, 5, last - first],
+    ]);
+    for (const [a, b] of [mine.slice(0, 2), mine.slice(1)]) {
+      expectWithin(trails.x[trails.start[b]], trails.x[trails.start[a + 1] - 1], { abs: 1e-6 });
+    }
+  });
+
+  it('of all frames takes the place of the class of the track', () => {
+    const given = new Map([[block.track[long], [[0, 1000, 2] as const]]]);
+    const trails = projectTrails({ ...block, given }, 25, 15, view, wide);
+    const mine = Array.from({ length: trails.count }, (_, t) => t).filter((t) => trails.index[t] === long);
+    expect(mine.map((t) => trails.population[t])).toEqual([2]);
+  });
+});

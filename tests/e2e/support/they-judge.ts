@@ -1,8 +1,8 @@
 import { mkdirSync } from 'node:fs';
 import { join } from 'node:path';
 import { AxeBuilder } from '@axe-core/playwright';
-import type { Browser, Page } from 'playwright-core';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import type { Page } from 'playwright-core';
+import { beforeAll, expect, it } from 'vitest';
 import { makeToken } from '@/auth/tokens';
 import { NEXT_CANDIDATE } from '@/components/review/next-candidate-time';
 import { scopesOf } from '@/lib/access';
@@ -10,49 +10,27 @@ import { newId } from '@/lib/ids';
 import type { ListView } from '@/lib/views/common';
 import type { ReviewQueueView } from '@/lib/views/review-view';
 import { models } from '@/models';
-import { closeDatabase } from '@/models/database';
 import { execute, selectRows } from '@/models/queries/select';
-import { makeAnalysedRecording } from '../helpers/analysed-recording';
-import { ApiScript } from '../helpers/api-client';
-import { candidateFacts } from '../helpers/candidates';
-import { sharedServer } from '../helpers/server';
-import { makeTestLab, type TestLab } from '../helpers/test-lab';
-import { until } from '../helpers/until';
-import { expectNoSidewaysScroll, launchBrowser, openWindow, signIn, type Visit } from './support/browser';
+import { ApiScript } from '../../helpers/api-client';
+import { candidateFacts } from '../../helpers/candidates';
+import { until } from '../../helpers/until';
+import { expectNoSidewaysScroll, openWindow, signIn, type Visit } from './browser';
+import { analysisId, browser, lab, server } from './review-day';
 
-const server = sharedServer();
-const SHOTS = join(import.meta.dirname, '..', 'shots');
+const SHOTS = join(import.meta.dirname, '..', '..', 'shots');
 const COUNT = 30;
 
-let browser: Browser;
-let visit: Visit;
-let lab: TestLab;
-let second: ApiScript;
-let analysisId: string;
-
-beforeAll(async () => {
-  mkdirSync(SHOTS, { recursive: true });
-  lab = await makeTestLab(server.databaseUrl);
-  const made = await makeAnalysedRecording(new ApiScript(server.baseUrl, lab.people.experimentalist.token));
-  analysisId = made.analysisId;
-  await models().Campaign.update({ readings: 2 }, { where: { id: made.campaignId } });
-  await meetings();
-  second = new ApiScript(server.baseUrl, await secondReader());
-  browser = await launchBrowser();
-  visit = await openWindow(browser);
-  await signIn(visit.page, lab.people.annotator);
-}, 240_000);
-afterAll(async () => {
-  await browser?.close();
-  await closeDatabase();
-});
+/** The window of whoever judges or settles. */
+export let visit: Visit;
+/** The second reader, who works by a script. */
+export let second: ApiScript;
 
 /** Thirty pairs of the tracks that were found, in place of those that the machine thinks of. */
 async function meetings(): Promise<void> {
   await execute('DELETE FROM candidates WHERE analysis_id = $1', [analysisId]);
   const tracks = await selectRows<{ number: number; x: number; y: number; first: number }>(
     `SELECT number, mean_x_px AS x, mean_y_px AS y, first_frame AS first FROM tracks
-     WHERE analysis_id = $1 ORDER BY points DESC, number LIMIT ${COUNT + 1}`,
+     WHERE analysis_id = $1 AND ended_revision IS NULL ORDER BY points DESC, number LIMIT ${COUNT + 1}`,
     [analysisId],
   );
   expect(tracks.length).toBe(COUNT + 1);
@@ -98,14 +76,14 @@ const judged = (page: Page, count: number) =>
     .getByText(`${count} of ${COUNT}`, { exact: false })
     .first()
     .waitFor({ timeout: 60_000 });
-const stored = (readerId: string) =>
+const judgements = (readerId: string) =>
   selectRows<{ event: number; verdict: string; reason: string | null; note: string | null; step: number }>(
     `SELECT c.event, v.verdict, v.reason, v.note, v.step FROM verdicts v JOIN candidates c ON c.id = v.candidate_id
      WHERE v.analysis_id = $1 AND v.reader_id = $2 ORDER BY v.created_at, v.step`,
     [analysisId, readerId],
   );
 
-async function looksRight(page: Page, name: string): Promise<void> {
+export async function looksRight(page: Page, name: string): Promise<void> {
   await page.waitForFunction(() => document.querySelectorAll('.loading-bars').length === 0, null, {
     timeout: 30_000,
   });
@@ -119,7 +97,15 @@ async function looksRight(page: Page, name: string): Promise<void> {
 }
 
 /** Reader, second reader, principal investigator; each step leads to the next. */
-describe('candidates are judged', () => {
+export function theyJudge(): void {
+  beforeAll(async () => {
+    mkdirSync(SHOTS, { recursive: true });
+    await meetings();
+    second = new ApiScript(server.baseUrl, await secondReader());
+    visit = await openWindow(browser);
+    await signIn(visit.page, lab.people.annotator);
+  }, 120_000);
+
   it('thirty of them by keyboard alone, three while the link is lost, each stored once', async () => {
     const { page, context } = visit;
     await page.goto('/review');
@@ -166,11 +152,11 @@ describe('candidates are judged', () => {
     }
     await page.getByText('That was the last one.').waitFor();
     await until(
-      () => stored(lab.people.annotator.userId),
+      () => judgements(lab.people.annotator.userId),
       (rows) => rows.length >= COUNT,
       { withinMs: 60_000 },
     );
-    const rows = await stored(lab.people.annotator.userId);
+    const rows = await judgements(lab.people.annotator.userId);
     expect(new Set(rows.map(({ event }) => event)).size).toBe(COUNT);
     expect(rows).toHaveLength(COUNT);
     expect(rows.filter(({ verdict }) => verdict === 'yes')).toHaveLength(10);
@@ -202,7 +188,7 @@ describe('candidates are judged', () => {
     await page.getByText('Another verdict takes its place').waitFor({ timeout: 60_000 });
     await page.keyboard.press('1');
     await page.getByText('That was the last one.').waitFor();
-    const rows = await until(() => stored(lab.people.annotator.userId), (all) => all.length > COUNT, { withinMs: 60_000 }); // prettier-ignore
+    const rows = await until(() => judgements(lab.people.annotator.userId), (all) => all.length > COUNT, { withinMs: 60_000 }); // prettier-ignore
     expect(rows.at(-1)).toMatchObject({ verdict: 'yes', step: 2 });
     expect(
       visit.complaints.filter((text) => !/ERR_INTERNET_DISCONNECTED|Failed to fetch/.test(text)),
@@ -212,7 +198,7 @@ describe('candidates are judged', () => {
   it('a second reader disagrees on two; the principal investigator is told, with the strips, and settles', async () => {
     const { items } = await second.json<ReviewQueueView>(`/api/v1/analyses/${analysisId}/review-queue`);
     const said = new Map(
-      (await stored(lab.people.annotator.userId)).map(({ event, verdict }) => [event, verdict]),
+      (await judgements(lab.people.annotator.userId)).map(({ event, verdict }) => [event, verdict]),
     );
     const other = items.filter(({ event }) => said.get(event) === 'no').slice(0, 2);
     for (const { id, event } of items) {
@@ -275,4 +261,4 @@ describe('candidates are judged', () => {
     await page.getByText(`${events} events confirmed by people`).waitFor({ timeout: 60_000 });
     expect(visit.complaints).toEqual([]);
   }, 240_000);
-});
+}
