@@ -48,7 +48,7 @@ function extraOf({ given }: TrackBlock): number {
 }
 
 /** Class of a track in a frame: what a person gave that stretch, else that of the track. */
-export function classIn(block: TrackBlock, i: number, frame: number): number {
+function classIn(block: TrackBlock, i: number, frame: number): number {
   const stretches = block.given.size > 0 ? block.given.get(block.track[i]) : undefined;
   for (const [from, to, code] of stretches ?? []) if (frame >= from && frame <= to) return code;
   return block.population[i];
