@@ -5,10 +5,10 @@ import { ROUTES } from '@/app/api/route-table';
 import { ROLES } from '@/lib/access';
 import { FAULT_ROWS } from './helpers/fault-rows';
 
-/** Text of all test files below `tests`, by path. */
+/** Text of all files below `tests` that hold tests, by path: also of those that stand in parts. */
 const files = new Map(
   (readdirSync('tests', { recursive: true }) as string[])
-    .filter((path) => /\.(test|spec)\.tsx?$/.test(path))
+    .filter((path) => /\.(test|spec)\.tsx?$|^e2e\/support\/they-/.test(path))
     .map((path) => [path, readFileSync(join('tests', path), 'utf8')]),
 );
 

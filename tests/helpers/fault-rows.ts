@@ -142,10 +142,10 @@ export const FAULT_ROWS: readonly FaultRow[] = [
         'none is lost or doubled whatever requests and answers are lost',
       ],
       [
-        'e2e/review.spec.ts',
+        'e2e/support/they-judge.ts',
         'thirty of them by keyboard alone, three while the link is lost, each stored once',
       ],
-      ['e2e/review-day.spec.ts', 'what they do while the link is lost is kept and shown, and stored'],
+      ['e2e/support/they-correct.ts', 'what they do while the link is lost is kept and shown, and stored'],
     ],
   },
   {
