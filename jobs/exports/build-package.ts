@@ -132,6 +132,7 @@ async function allTexts(context: BuildContext): Promise<PackedFile[]> {
   for (const analysis of plan.analyses) {
     const { estimates } = analysis.measures;
     await write(analysis, 'estimates.json', estimatesJson(estimates), 'Estimates with their inputs');
+    await write(analysis, 'details.json', texts.detailsJson(analysis), 'What else was measured, with notes');
     await write(analysis, 'provenance.json', texts.provenanceJson(analysis), 'Where the numbers come from');
     await write(analysis, 'corrections.csv', smallCsv(CORRECTIONS.columns, texts.correctionRows(analysis)), CORRECTIONS.title, CORRECTIONS); // prettier-ignore
     await write(analysis, 'judgements.csv', smallCsv(JUDGEMENTS.columns, texts.judgementRows(analysis)), JUDGEMENTS.title, JUDGEMENTS); // prettier-ignore

@@ -9,7 +9,7 @@ import type { MotionMeasures } from '@/tracking/flow-measures';
 import type { VelocityPdf } from '@/tracking/velocity-pdf-shape';
 import type { TablePiece } from './table-pieces';
 
-type Value = number | string | null;
+export type Value = number | string | null;
 
 /** Significant digits of numbers in small tables, more than any of them deserves. */
 const DIGITS = 10;
@@ -35,7 +35,11 @@ export function smallCsv(columns: readonly Column[], rows: readonly (readonly Va
   return [head, ...body].map((line) => line + LINE_END).join('');
 }
 
-const piece = (table: TableDefinition, rows: readonly (readonly Value[])[], csv?: string): TablePiece => ({
+export const piece = (
+  table: TableDefinition,
+  rows: readonly (readonly Value[])[],
+  csv?: string,
+): TablePiece => ({
   batch: batchOf(table.columns, rows),
   csv: csv ?? smallCsv(table.columns, rows),
 });

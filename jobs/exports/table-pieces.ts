@@ -1,10 +1,10 @@
 import type { RowBatch } from '@/lib/exports/column';
 import { TRACKS, VELOCITIES } from '@/lib/exports/table-definitions';
 import { LINE_END } from '@/lib/tables/csv-chunks';
-import type { TableScale, TableTrack } from '@/lib/tables/track-rows';
+import { stateAt, tablePieces, type TableScale, type TableTrack } from '@/lib/tables/track-rows';
 import { trackCsvRows, TRACKS_COLUMNS } from '@/lib/tables/tracks-csv';
 import { velocityCsvRows, VELOCITIES_COLUMNS } from '@/lib/tables/velocities-csv';
-import { POINT_BRIDGED } from '@/tracking/types';
+import { POINT_BRIDGED, POPULATIONS } from '@/tracking/types';
 import { trackVelocities } from '@/tracking/velocities';
 import { BatchBuilder } from './batch-builder';
 
@@ -22,7 +22,8 @@ interface TrackTable {
   fill(track: TableTrack, add: (put: (columns: BatchBuilder['columns'], at: number) => void) => void): void;
 }
 
-const UNKNOWN_CODE = -1;
+/** Code of a population by its name; -1 where it is not known. */
+const codeOf = (population: string): number => (POPULATIONS as readonly string[]).indexOf(population);
 
 async function* pieces(
   columns: ConstructorParameters<typeof BatchBuilder>[0],
@@ -66,6 +67,7 @@ export function trackPieces(
     fill(track, add) {
       for (let i = 0; i < track.frame.length; i++) {
         const measured = (track.flags[i] & POINT_BRIDGED) === 0;
+        const { population, pTrapped } = stateAt(track, track.frame[i]);
         add((columns, at) => {
           columns[0][at] = track.track;
           columns[1][at] = track.frame[i];
@@ -77,8 +79,8 @@ export function trackPieces(
           columns[7][at] = measured ? track.sxPx[i] : Number.NaN;
           columns[8][at] = measured ? track.syPx[i] : Number.NaN;
           columns[9][at] = measured ? track.brightness[i] : Number.NaN;
-          columns[10][at] = track.population ?? UNKNOWN_CODE;
-          columns[11][at] = track.pTrapped;
+          columns[10][at] = codeOf(population);
+          columns[11][at] = pTrapped;
         });
       }
     },
@@ -97,20 +99,24 @@ export function velocityPieces(
     header: VELOCITIES_COLUMNS,
     csvRows: (track) => velocityCsvRows(track, lagsFrames, scale),
     fill(track, add) {
+      const parts = tablePieces(track);
       for (const lagFrames of lagsFrames) {
-        const v = trackVelocities(track, lagFrames, scale);
-        for (let i = 0; i < v.frame.length; i++) {
-          add((columns, at) => {
-            columns[0][at] = track.track;
-            columns[1][at] = v.frame[i];
-            columns[2][at] = v.frame[i] * scale.frameInterval_s;
-            columns[3][at] = lagFrames;
-            columns[4][at] = v.vxMS[i];
-            columns[5][at] = v.vyMS[i];
-            columns[6][at] = v.svxMS[i];
-            columns[7][at] = v.svyMS[i];
-            columns[8][at] = track.population ?? UNKNOWN_CODE;
-          });
+        for (const part of parts) {
+          const v = trackVelocities(part, lagFrames, scale);
+          for (let i = 0; i < v.frame.length; i++) {
+            const { population } = stateAt(part, v.frame[i]);
+            add((columns, at) => {
+              columns[0][at] = track.track;
+              columns[1][at] = v.frame[i];
+              columns[2][at] = v.frame[i] * scale.frameInterval_s;
+              columns[3][at] = lagFrames;
+              columns[4][at] = v.vxMS[i];
+              columns[5][at] = v.vyMS[i];
+              columns[6][at] = v.svxMS[i];
+              columns[7][at] = v.svyMS[i];
+              columns[8][at] = codeOf(population);
+            });
+          }
         }
       }
     },

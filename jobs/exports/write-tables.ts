@@ -2,11 +2,13 @@ import type { TableDefinition } from '@/lib/exports/column';
 import type { ExportFormat } from '@/lib/exports/export-facts';
 import type { PlannedAnalysis } from '@/lib/exports/plan';
 import * as tables from '@/lib/exports/table-definitions';
+import { withSegments } from '@/lib/tables/stream-tables';
 import { streamTracks } from '@/models/queries/read-tracks';
 import { csvSink } from './csv-sink';
 import { hdf5Sink } from './hdf5-sink';
 import { npzSink } from './npz-sink';
 import { parquetSink } from './parquet-sink';
+import * as detail from './detail-tables';
 import * as small from './small-tables';
 import { trackPieces, velocityPieces, type TablePiece } from './table-pieces';
 import type { TableSink } from './table-sink';
@@ -21,7 +23,8 @@ export function piecesOf(
   withCsv: boolean,
 ): AsyncIterable<TablePiece> | Iterable<TablePiece> {
   const { measures, conditions } = analysis;
-  const tracks = () => streamTracks(labId, analysis.id, analysis.tracksRevision);
+  const tracks = () =>
+    withSegments(streamTracks(labId, analysis.id, analysis.tracksRevision), measures.details?.segments ?? []);
   switch (table) {
     case tables.TRACKS:
       return trackPieces(tracks(), conditions, withCsv);
@@ -35,6 +38,16 @@ export function piecesOf(
       return [small.autocorrelationsPiece(table, measures.motion)];
     case tables.RECONNECTIONS:
       return [small.reconnectionsPiece(table, analysis.candidates, analysis.verdicts)];
+    case tables.OVER_TIME:
+      return [detail.overTimePiece(table, measures.details)];
+    case tables.PROFILES:
+      return [detail.profilesPiece(table, measures.details)];
+    case tables.ACCELERATIONS:
+      return [detail.accelerationsPiece(table, measures.details)];
+    case tables.TAILS:
+      return [detail.tailsPiece(table, measures.motion)];
+    case tables.CHANGES_OF_STATE:
+      return [detail.changesPiece(table, measures.details)];
     default:
       return [small.estimatesPiece(table, measures.estimates)];
   }

@@ -50,6 +50,10 @@ export const ANALYSES: TableDefinition = {
     text('campaign', 'Campaign.'),
     text('run', 'Run.'),
     text('recording', 'Recording.'),
+    text(
+      'rehearsal',
+      'Name of the rehearsal that made the recording: simulated, or planted particles. Empty for what a camera took.',
+    ),
     text('sha256', 'SHA-256 of the recording as it was sent.'),
     { name: 'temperature_K', store: 'float64', unit: 'K', description: 'Temperature of the helium.' },
     { name: 'heat_flux_W_m2', store: 'float64', unit: 'W/m^2', description: 'Heat flux.' },

@@ -23,7 +23,7 @@ export const analysesRows = ({ analyses }: ExportPlan): Value[][] =>
       ({ quantity, method }) => quantity === 'line_density' && method === 'combined',
     );
     const { temperature_K, heatFlux_W_m2 } = one.conditions;
-    return [one.folder, one.id, one.campaign.name, one.run.name, one.recording.name, one.recording.sha256, temperature_K ?? null, heatFlux_W_m2 ?? null, combined?.value ?? null, combined?.low ?? null, combined?.high ?? null, one.summary?.tracks ?? null, one.tracksRevision, one.codeVersion, one.signedOff?.at ?? null, one.signedOff?.by ?? null]; // prettier-ignore
+    return [one.folder, one.id, one.campaign.name, one.run.name, one.recording.name, one.rehearsal?.name ?? null, one.recording.sha256, temperature_K ?? null, heatFlux_W_m2 ?? null, combined?.value ?? null, combined?.low ?? null, combined?.high ?? null, one.summary?.tracks ?? null, one.tracksRevision, one.codeVersion, one.signedOff?.at ?? null, one.signedOff?.by ?? null]; // prettier-ignore
   });
 
 export const correctionRows = ({ corrections }: PlannedAnalysis): Value[][] =>
@@ -34,7 +34,8 @@ export const judgementRows = ({ judgements }: PlannedAnalysis): Value[][] =>
 
 /** Where the numbers of an analysis come from: input, settings, code, people. */
 export function provenanceJson(analysis: PlannedAnalysis): string {
-  const { id, campaign, run, recording, conditions, recipe, recipeName, imageFacts, summary } = analysis;
+  const { id, campaign, run, recording, rehearsal, conditions, recipe, recipeName, imageFacts, summary } =
+    analysis;
   const { codeVersion, createdBy, startedAt, finishedAt, signedOff, tracksRevision } = analysis;
   const { populations } = analysis.measures;
   return sortedJson({
@@ -42,6 +43,7 @@ export function provenanceJson(analysis: PlannedAnalysis): string {
     campaign,
     run,
     recording,
+    rehearsal,
     conditions,
     recipe: { name: recipeName, values: recipe },
     imageFacts,
@@ -53,6 +55,21 @@ export function provenanceJson(analysis: PlannedAnalysis): string {
     startedAt,
     finishedAt,
     signedOff,
+  });
+}
+
+/** What was measured beyond the tables: verdicts and notes that have no rows. Empty where the analysis is older. */
+export function detailsJson({ measures }: PlannedAnalysis): string {
+  const { details } = measures;
+  if (!details) return sortedJson({});
+  const { comparisons, overTime, profiles, shape, features } = details;
+  return sortedJson({
+    comparisons,
+    transient: overTime.transient,
+    densitiesOverTime: overTime.densities.map(({ method, note }) => ({ method, note })),
+    profiles: profiles && { fromWall: profiles.fromWall, width_m: profiles.widthM, note: profiles.note },
+    shape,
+    features,
   });
 }
 
@@ -80,7 +97,7 @@ export function readmeText(plan: ExportPlan): string {
     '',
     `${contents(plan)}; \`analyses.csv\` tells what they are. Each has a folder:`,
     '',
-    ...plan.analyses.map(({ folder, campaign, run, recording }) => `- \`${folder}/\`: ${campaign.name}, ${run.name}, ${recording.name}`), // prettier-ignore
+    ...plan.analyses.map(({ folder, campaign, run, recording, rehearsal }) => `- \`${folder}/\`: ${campaign.name}, ${run.name}, ${recording.name}${rehearsal ? `. ${rehearsalText(rehearsal.kind)}` : ''}`), // prettier-ignore
     '',
     '| file | holds |',
     '| --- | --- |',
@@ -89,6 +106,7 @@ export function readmeText(plan: ExportPlan): string {
     ),
     '| corrections.csv, judgements.csv | what people changed and decided |',
     '| estimates.json | estimates with the inputs that they came from |',
+    '| details.json | what else was measured, with notes: law of a growth or decay, beside what is expected, shape of lines |',
     '| provenance.json | input with its SHA-256, conditions, recipe, code version, people |',
     '',
     'Every column of every table stands in `data-dictionary.csv` with type, unit and meaning; so do the units in the files themselves: in the column names (CSV), in the key-value metadata (Parquet), in the attribute `unit` (HDF5), in the arrays `columns` and `units` (NumPy).',
@@ -103,6 +121,12 @@ export function readmeText(plan: ExportPlan): string {
     '',
   ].join('\n');
 }
+
+/** What must not be taken for a measurement says so wherever it is named. */
+export const rehearsalText = (kind: 'simulated' | 'planted'): string =>
+  kind === 'simulated'
+    ? 'Rehearsal: simulated frames, no measurement.'
+    : 'Rehearsal: particles of known truth planted in measured frames, no measurement.';
 
 const OPENING: Record<ExportFormat, string[]> = {
   csv: ['import pandas', "tracks = pandas.read_csv('analysis-001/tracks.csv')"],

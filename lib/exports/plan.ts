@@ -1,7 +1,8 @@
 import type { AnalysisSummary, ImageFacts } from '@/lib/analysis-facts';
 import type { ReconnectionRow, VerdictText } from '@/lib/tables/reconnections-csv';
 import type { Estimate } from '@/tracking/estimates/estimate';
-import type { MotionMeasures, PopulationSummary } from '@/tracking/flow-measures';
+import type { FlowDetails, MotionMeasures, PopulationSummary } from '@/tracking/flow-measures';
+import type { RehearsalKind } from '@/tracking/rehearsal/plan';
 import type { Conditions, Recipe } from '@/tracking/types';
 import type { VelocityPdf } from '@/tracking/velocity-pdf-shape';
 import type { ExportFormat } from './export-facts';
@@ -41,6 +42,8 @@ export interface PlannedAnalysis {
   folder: string;
   tracksRevision: number;
   campaign: { id: string; name: string };
+  /** What it rehearses, where no camera took the recording. */
+  rehearsal: { id: string; name: string; kind: RehearsalKind } | null;
   run: { id: string; name: string; startedAt: string | null };
   recording: { id: string; name: string; sha256: string | null; bytes: number; frames: number; width: number; height: number }; // prettier-ignore
   conditions: Conditions;
@@ -59,6 +62,8 @@ export interface PlannedAnalysis {
     pdfs: VelocityPdf[];
     estimates: Estimate[];
     motion: MotionMeasures | null;
+    /** Over time, across the channel, captures; null in analyses older than these. */
+    details: FlowDetails | null;
   };
   candidates: ReconnectionRow[];
   /** By event; empty where nobody decided. */

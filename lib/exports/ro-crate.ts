@@ -3,6 +3,7 @@ import { conditionEntities } from './crate-conditions';
 import type { Entity } from './crate-entity';
 import { licenceOf } from './licences';
 import { orcidUrl } from './orcid';
+import { rehearsalText } from './package-texts';
 import { mediaTypeOf, type PackedFile } from './packed-file';
 import type { Contributor, ExportPlan, PlannedAnalysis } from './plan';
 
@@ -109,13 +110,15 @@ function signOffText(signedOff: PlannedAnalysis['signedOff']): string {
 }
 
 function folderEntity(analysis: PlannedAnalysis, files: readonly PackedFile[]): Entity {
-  const { campaign, run, recording } = analysis;
+  const { campaign, run, recording, rehearsal } = analysis;
   const parts = files.filter(({ analysisId }) => analysisId === analysis.id);
   return {
     '@id': folderId(analysis),
     '@type': 'Dataset',
     name: `${campaign.name}, ${run.name}, ${recording.name}`,
-    description: signOffText(analysis.signedOff),
+    description: [rehearsal && rehearsalText(rehearsal.kind), signOffText(analysis.signedOff)]
+      .filter(Boolean)
+      .join(' '),
     hasPart: parts.map(({ path }) => ref(path)),
   };
 }
@@ -125,7 +128,7 @@ function analysisEntities(
   files: readonly PackedFile[],
   contributors: readonly Contributor[],
 ): Entity[] {
-  const { recording, run } = analysis;
+  const { recording, run, rehearsal } = analysis;
   const conditions = conditionEntities(analysis);
   // Who is a contributor too is one person, with their ORCID where it is known.
   const agent = analysis.createdBy
@@ -142,7 +145,7 @@ function analysisEntities(
       '@id': recordingId(recording.id),
       '@type': 'CreativeWork',
       name: recording.name,
-      description: `Camera stack of ${recording.frames} frames of ${recording.width} x ${recording.height} px, ${recording.bytes} bytes, not part of this package.`,
+      description: `${rehearsal ? `${rehearsalText(rehearsal.kind)} Stack` : 'Camera stack'} of ${recording.frames} frames of ${recording.width} x ${recording.height} px, ${recording.bytes} bytes, not part of this package.`,
       ...(recording.sha256 ? { identifier: `sha256:${recording.sha256}` } : {}),
       ...(run.startedAt ? { dateCreated: run.startedAt } : {}),
     },

@@ -1,13 +1,7 @@
 import { POPULATIONS } from '@/tracking/types';
-import type { Column, ColumnStore, TableDefinition } from './column';
-
-const column = (
-  name: string,
-  store: ColumnStore,
-  unit: string,
-  description: string,
-  categories?: readonly string[],
-): Column => ({ name, store, unit, description, ...(categories ? { categories } : {}) });
+import type { TableDefinition } from './column';
+import { ACCELERATIONS, CHANGES_OF_STATE, OVER_TIME, PROFILES, TAILS } from './detail-definitions';
+import { column } from './define-column';
 
 const track = column('track', 'int32', '1', 'Number of the track, from 0 in order of first frame, then y, then x; corrected tracks keep their number or get a new one.'); // prettier-ignore
 const frame = column('frame', 'int32', '1', 'Frame, from 0.');
@@ -142,6 +136,8 @@ export const AUTOCORRELATIONS: TableDefinition = {
   columns: [populationName, component('Velocity'), lag, column('value', 'float64', '1', 'C(lag) / C(0).'), low('1'), high('1')], // prettier-ignore
 };
 
+export { ACCELERATIONS, CHANGES_OF_STATE, OVER_TIME, PROFILES, TAILS };
+
 /** Tables of each analysis in a package, in order. */
 export const ANALYSIS_TABLES: readonly TableDefinition[] = [
   TRACKS,
@@ -149,6 +145,11 @@ export const ANALYSIS_TABLES: readonly TableDefinition[] = [
   VELOCITY_PDF,
   DISPLACEMENTS,
   AUTOCORRELATIONS,
+  ACCELERATIONS,
+  TAILS,
+  OVER_TIME,
+  PROFILES,
+  CHANGES_OF_STATE,
   RECONNECTIONS,
   ESTIMATES,
 ];

@@ -1,6 +1,7 @@
 import type { CorrectionStep, JudgementStep, PlannedAnalysis } from '@/lib/exports/plan';
 import { readReconnections } from './analysis-outcome';
 import { measuresOf } from './read-results';
+import { REHEARSAL_MARK } from './rehearsal-mark';
 import { selectRows } from './select';
 
 interface Row extends Omit<
@@ -42,7 +43,7 @@ export async function planAnalyses(labId: string, ids: readonly string[]): Promi
        json_build_object('id', g.id, 'name', g.name, 'sha256', g.sha256, 'bytes', g.bytes, 'frames', a.frames,
          'width', g.width, 'height', g.height) AS recording,
        (SELECT p.name || ' ' || p.version FROM recipes p WHERE p.id = a.recipe_id) AS "recipeName",
-       u.name AS "createdBy", a.signed_off_at AS "signedOffAt", a.content_hash AS "contentHash",
+       ${REHEARSAL_MARK} AS rehearsal, u.name AS "createdBy", a.signed_off_at AS "signedOffAt", a.content_hash AS "contentHash",
        (SELECT s.name FROM users s WHERE s.id = a.signed_off_by) AS "signedOffBy"
      FROM analyses a JOIN recordings g ON g.id = a.recording_id JOIN runs r ON r.id = g.run_id
        JOIN campaigns k ON k.id = r.campaign_id LEFT JOIN users u ON u.id = a.created_by
@@ -52,7 +53,11 @@ export async function planAnalyses(labId: string, ids: readonly string[]): Promi
   const planned: PlannedAnalysis[] = [];
   for (const [i, row] of rows.entries()) {
     const { runStartedAt, signedOffAt, signedOffBy, contentHash, ...kept } = row;
-    const { populations, pdfs, estimates, motion } = await measuresOf(labId, row.id, row.tracksRevision);
+    const { populations, pdfs, estimates, motion, details } = await measuresOf(
+      labId,
+      row.id,
+      row.tracksRevision,
+    );
     const candidates = await readReconnections(labId, row.id);
     planned.push({
       ...kept,
@@ -65,7 +70,7 @@ export async function planAnalyses(labId: string, ids: readonly string[]): Promi
         by: signedOffBy,
         contentHash: contentHash ?? '',
       },
-      measures: { populations, pdfs, estimates, motion },
+      measures: { populations, pdfs, estimates, motion, details },
       candidates: candidates.rows,
       // By number of the event, which need not be its place in the list.
       verdicts: Array.from(

@@ -10,9 +10,12 @@ import { stopExport } from '@/jobs/build-export';
 import { closeDoorbell } from '@/jobs/doorbell';
 import { figuresOf } from '@/jobs/exports/analysis-figure-files';
 import { exportFolder } from '@/jobs/exports/export-folder';
+import { analysesRows, readmeText } from '@/lib/exports/package-texts';
+import { roCrate } from '@/lib/exports/ro-crate';
 import { ESTIMATES, TRACKS, VELOCITIES } from '@/lib/exports/table-definitions';
 import { models } from '@/models';
 import { getSequelize } from '@/models/database';
+import { planAnalyses } from '@/models/queries/export-plan';
 import { execute } from '@/models/queries/select';
 import { POINT_BRIDGED, POPULATIONS } from '@/tracking/types';
 import { trackVelocities } from '@/tracking/velocities';
@@ -46,6 +49,28 @@ interface Found {
   tables: Record<'tracks' | 'velocities' | 'estimates', Table>;
 }
 
+/** A tracer that is caught within its track, the longest of the scene, whatever the scene has of that. */
+const CHANGED = (() => {
+  const { tracks } = measuredScene();
+  const length = (i: number) => tracks.start[i + 1] - tracks.start[i];
+  let track = 0;
+  for (let i = 1; i < tracks.count; i++) if (length(i) > length(track)) track = i;
+  const first = tracks.frame[tracks.start[track]];
+  const last = tracks.frame[tracks.start[track + 1] - 1];
+  const middle = (first + last) >> 1;
+  return [
+    { track, fromFrame: first, toFrame: middle, population: 'free', pTrapped: 0.015625 },
+    { track, fromFrame: middle + 1, toFrame: last, population: 'trapped', pTrapped: 0.984375 },
+  ];
+})();
+/** Population and probability in a frame, in which a change within the track counts. */
+function stateIn(track: number, frame: number): [code: number, pTrapped: number] {
+  const stretch = CHANGED.find((one) => one.track === track && one.fromFrame <= frame && frame <= one.toFrame); // prettier-ignore
+  const { population, pTrapped } = measuredScene().measures.tracks;
+  if (!stretch) return [population[track], pTrapped[track]];
+  return [(POPULATIONS as readonly string[]).indexOf(stretch.population), stretch.pTrapped];
+}
+
 let db: FreshDatabase;
 let lab: LabRows;
 let analysisId: string;
@@ -68,6 +93,11 @@ beforeAll(async () => {
   process.env.BEADLINE_DATA = mkdtempSync(join(root, 'exports-'));
   lab = await makeLab();
   analysisId = (await measuredAnalysis(lab, { run: '=1+1', recording: 'stack ä.tif' })).id;
+  await execute(
+    `UPDATE analysis_measures SET details = jsonb_set(details, '{segments}', $2::jsonb)
+     WHERE analysis_id = $1`,
+    [analysisId, JSON.stringify(CHANGED)],
+  );
   await logCorrection(1, 'remove', { track: 0 });
   await logCorrection(2, 'undo', { of: '00000000-0000-7000-8000-000000000001' });
   ({ path } = await buildPackageOf(lab, { ...wish(), formats: ['csv', 'hdf5', 'parquet', 'npz'] }));
@@ -93,14 +123,14 @@ const json = <T>(name: string) => JSON.parse(text(name)) as T;
 
 /** Rows of the tracks table, straight from the kernels' own arrays: what the database was filled with. */
 function trackColumns(): Record<string, (number | string | null)[]> {
-  const { tracks, measures } = measuredScene();
+  const { tracks } = measuredScene();
   const out: Record<string, (number | null)[]> = Object.fromEntries(
     TRACKS.columns.map(({ name }) => [name, []]),
   );
   for (let track = 0; track < tracks.count; track++) {
     for (let i = tracks.start[track]; i < tracks.start[track + 1]; i++) {
       const measured = !(tracks.flags[i] & POINT_BRIDGED);
-      const values = [track, tracks.frame[i], tracks.frame[i] * 0.005, tracks.xPx[i], tracks.yPx[i], tracks.xPx[i] * 1e-5, tracks.yPx[i] * 1e-5, measured ? tracks.sxPx[i] : null, measured ? tracks.syPx[i] : null, measured ? tracks.brightness[i] : null, measures.tracks.population[track], measures.tracks.pTrapped[track]]; // prettier-ignore
+      const values = [track, tracks.frame[i], tracks.frame[i] * 0.005, tracks.xPx[i], tracks.yPx[i], tracks.xPx[i] * 1e-5, tracks.yPx[i] * 1e-5, measured ? tracks.sxPx[i] : null, measured ? tracks.syPx[i] : null, measured ? tracks.brightness[i] : null, ...stateIn(track, tracks.frame[i])]; // prettier-ignore
       values.forEach((value, c) => out[TRACKS.columns[c].name].push(value !== null && Number.isNaN(value) ? null : value)); // prettier-ignore
     }
   }
@@ -123,12 +153,12 @@ describe('a package as other programs read it', () => {
   });
 
   it('NumPy and h5py read the very velocities', () => {
-    const { tracks, measures } = measuredScene();
+    const { tracks } = measuredScene();
     const rows: (number | null)[][] = [];
     for (let track = 0; track < tracks.count; track++) {
       for (const lag of SCENE_RECIPE.lagsFrames) {
         const v = trackVelocities(trackSlice(tracks, track), lag, SCENE_CONDITIONS);
-        for (let i = 0; i < v.frame.length; i++) rows.push([track, v.frame[i], v.frame[i] * 0.005, lag, v.vxMS[i], v.vyMS[i], v.svxMS[i], v.svyMS[i], measures.tracks.population[track]]); // prettier-ignore
+        for (let i = 0; i < v.frame.length; i++) rows.push([track, v.frame[i], v.frame[i] * 0.005, lag, v.vxMS[i], v.vyMS[i], v.svxMS[i], v.svyMS[i], stateIn(track, v.frame[i])[0]]); // prettier-ignore
       }
     }
     const { npz, h5 } = found.tables.velocities;
@@ -224,6 +254,21 @@ describe('its descriptions', () => {
     ]);
   });
 
+  it('holds what else was measured: over time, profiles, accelerations, tails, captures, with notes', () => {
+    const { details, motion } = measuredScene().measures;
+    const rows = (name: string) => text(`analysis-001/${name}.csv`).trim().split('\r\n').slice(1);
+    expect(rows('over-time')).toHaveLength(details.overTime.timeS.length * (2 + details.overTime.densities.length)); // prettier-ignore
+    expect(rows('over-time').filter((row) => row.startsWith('trapped_tracers,count,m^-2,'))).toHaveLength(details.overTime.timeS.length); // prettier-ignore
+    const strips = details.profiles!.placeM.length;
+    expect(rows('profiles')).toHaveLength(strips * (details.profiles!.densityM2 ? 4 : 3));
+    expect(rows('accelerations')).toHaveLength(details.accelerations.length);
+    expect(rows('velocity-tails')).toHaveLength(motion.tails.length);
+    expect(rows('changes-of-state')).toHaveLength(details.changes.length);
+    const told = json<Record<string, unknown>>('analysis-001/details.json');
+    expect(told.transient).toEqual(JSON.parse(JSON.stringify(details.overTime.transient)));
+    expect(told.comparisons).toHaveLength(details.comparisons.length);
+  });
+
   it('a cell that a spreadsheet would compute is made harmless', () => {
     expect(text('analyses.csv')).toContain(",'=1+1,");
     expect(text('analyses.csv')).not.toMatch(/(^|,)=1/m);
@@ -269,6 +314,23 @@ describe('building', () => {
     const kept = execFileSync('/usr/bin/python3', ['-c', "import zipfile,sys\nprint(zipfile.ZipFile(sys.argv[1]).read('analysis-001/tracks.csv').decode(),end='')", packageFile(id)]).toString(); // prettier-ignore
     expect(kept).toBe('made before\r\n');
   }, 120_000);
+
+  it('says of a rehearsal, wherever it is named, that it is no measurement', async () => {
+    const [plain] = await planAnalyses(lab.labId, [analysisId]);
+    expect(plain.rehearsal).toBeNull();
+    await execute(
+      `INSERT INTO rehearsals (id, lab_id, name, kind, plan, recipe_request, state, run_id, recording_id, created_by)
+       VALUES ($1, $2, 'Plan of May', 'simulated', '{}', '{}', 'done', $3, $4, $5)`,
+      ['00000000-0000-7000-8000-0000000000aa', lab.labId, plain.run.id, plain.recording.id, lab.userId],
+    );
+    const [marked] = await planAnalyses(lab.labId, [analysisId]);
+    expect(marked.rehearsal).toMatchObject({ name: 'Plan of May', kind: 'simulated' });
+    const plan = { title: 'T', description: '', laboratory: 'L', licence: 'CC-BY-4.0', contributors: [], formats: ['csv' as const], figures: false, codeVersion: 'v', date: '2026-01-01', analyses: [marked] }; // prettier-ignore
+    expect(readmeText(plan)).toContain('simulated frames, no measurement');
+    expect(analysesRows(plan)[0]).toContain('Plan of May');
+    expect(JSON.stringify(roCrate(plan, []))).toContain('simulated frames, no measurement');
+    await execute('DELETE FROM rehearsals WHERE lab_id = $1', [lab.labId]);
+  });
 
   it('a stopped package is not built, and nothing of it stays', async () => {
     const id = await orderPackage(lab, wish());
