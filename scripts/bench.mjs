@@ -9,8 +9,8 @@ if (process.argv.includes('--screens')) {
   process.env.BEADLINE_CHROMIUM = await ensureChromium(sayOn(process.stderr));
   await runEntry('bench-screens', { database: 'none' });
 } else {
-  // Load and memory of the whole product are compared with nothing.
-  const alone = process.argv.some((option) => /^--(load|product-memory)/.test(option));
+  // Load, exports and memory of the whole product are compared with nothing.
+  const alone = process.argv.some((option) => /^--(load|exports|product-memory)/.test(option));
   if (!alone) process.env.BEADLINE_BENCH_PYTHON = (await ensureReferencePython(sayOn(process.stderr))) ?? '';
   await runEntry('bench', { database: 'none' });
 }

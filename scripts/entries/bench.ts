@@ -10,6 +10,7 @@ import { makeDemoStack } from '@/jobs/demo/make-demo-stack';
 import { localStack } from '@/jobs/local/local-stack';
 import { codeVersion } from '@/lib/env';
 import { comparePipelines } from '@/scripts/bench/compare';
+import { exportCases, exportGoals, exportTable, runExport, type ExportRun } from '@/scripts/bench/export-run';
 import { flowGoals, runFlow } from '@/scripts/bench/flow-run';
 import { memoryGoal, speedGoals, workersGoal } from '@/scripts/bench/goals';
 import { memoryTable, renderFrames, runMemory, type MemoryRun } from '@/scripts/bench/memory-run';
@@ -40,6 +41,7 @@ const { values: options } = parseArgs({
     /** The kernels of the flow alone. */
     flow: { type: 'boolean', default: false },
     load: { type: 'boolean', default: false },
+    exports: { type: 'boolean', default: false },
     'product-memory': { type: 'string' },
   },
 });
@@ -132,6 +134,19 @@ async function measureProduct(list: string): Promise<void> {
   say(`\n${productMemoryTable(runs)}`);
 }
 
+/** Tables of a data package: seconds and peak memory by format. */
+async function measureExports(): Promise<void> {
+  const child = fileURLToPath(new URL('./bench-export.mjs', import.meta.url));
+  const place = join(folder, 'exports');
+  await mkdir(place);
+  const runs: ExportRun[] = [];
+  for (const one of exportCases(options.quick)) {
+    note(`${one.points.toLocaleString('en')} points as ${one.formats.join(', ')}`);
+    runs.push(await runExport(one, place, child));
+  }
+  say(`\n${exportTable(runs)}\n\n${exportGoals(runs).join('\n')}`);
+}
+
 async function measureCore(): Promise<void> {
   if (!options.flow) {
     const sparse = await compareOn('sparse');
@@ -152,6 +167,7 @@ try {
     `Beadline ${codeVersion()}, Node ${process.version}, ${cpus().length} x ${cpus()[0]?.model}, load ${load}, kernels ${chooseKernels().name}`,
   );
   if (options.load) say(`\n${loadTable(await runLoad(note))}`);
+  else if (options.exports) await measureExports();
   else if (options['product-memory']) await measureProduct(options['product-memory']);
   else await measureCore();
 } finally {

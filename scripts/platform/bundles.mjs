@@ -28,7 +28,7 @@ const SOURCES = [
 /** Processes that compute are started by their path, so no import shows that these entries need them. */
 const COMPUTING = new Set(['worker', 'analyse', 'bench', 'validate']);
 const COMPUTE_CHILD = 'compute-child';
-const BENCH_CORE = 'bench-core';
+const BENCH_CHILDREN = ['bench-core', 'bench-export'];
 
 const entriesFolder = inRoot('scripts', 'entries');
 
@@ -54,7 +54,7 @@ export const codeVersion = () => {
 export async function ensureBundles({ names = entryNames(), say }) {
   const computes = names.some((name) => COMPUTING.has(name));
   if (computes) await ensureKernels(say);
-  const children = [...(computes ? [COMPUTE_CHILD] : []), ...(names.includes('bench') ? [BENCH_CORE] : [])];
+  const children = [...(computes ? [COMPUTE_CHILD] : []), ...(names.includes('bench') ? BENCH_CHILDREN : [])];
   const wanted = [...new Set([...names, ...children])];
   const hash = hashSources(ROOT, SOURCES);
   if (isCurrent(wanted, hash)) return;
