@@ -44,6 +44,16 @@ export const ACTIONS = {
     scope: 'read',
     grants: { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' },
   },
+  // Selections are everybody's who compares; one changes one's own.
+  'save-selection': {
+    scope: 'write',
+    grants: { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' },
+  },
+  'edit-selection': {
+    scope: 'write',
+    grants: { experimentalist: 'own', analyst: 'own', principal_investigator: 'yes' },
+  },
+  'leave-out-run': { scope: 'write', grants: { analyst: 'yes', principal_investigator: 'yes' } },
   'create-campaign': { scope: 'write', grants: { experimentalist: 'yes', principal_investigator: 'yes' } },
   'edit-campaign': { scope: 'write', grants: { experimentalist: 'own', principal_investigator: 'yes' } },
   'create-run': { scope: 'write', grants: { experimentalist: 'yes', principal_investigator: 'yes' } },

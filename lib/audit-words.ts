@@ -27,6 +27,11 @@ export const AUDIT_WORDS: Record<string, string> = {
   'run.changed': 'changed the run',
   'run.removed': 'removed the run',
   'run.restored': 'restored the run',
+  'run.left-out': 'left out of fits the run',
+  'run.taken-in': 'took into fits again the run',
+  'selection.saved': 'saved the selection',
+  'selection.changed': 'changed the selection',
+  'selection.removed': 'removed the selection',
   'recording.removed': 'removed the recording',
   'recording.restored': 'restored the recording',
   'rehearsal.made': 'made the rehearsal',
@@ -65,5 +70,6 @@ export const AUDIT_KINDS = [
   { value: 'verdict', label: 'Verdicts' },
   { value: 'review', label: 'Assignments' },
   { value: 'export', label: 'Data packages' },
+  { value: 'selection', label: 'Selections' },
   { value: 'rehearsal', label: 'Rehearsals' },
 ] as const;

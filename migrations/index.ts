@@ -14,6 +14,7 @@ import * as addFlowParts from './20261202140000-add-flow-parts';
 import * as addSessions from './20261202130000-add-sessions';
 import * as addExports from './20261201152000-add-exports';
 import * as mixKnownCandidates from './20261202110000-mix-known-candidates';
+import * as addSelectionsAndExclusions from './20261202120000-add-selections-and-exclusions';
 
 export interface Migration {
   /** File name without its ending: the same for sources and bundles. */
@@ -37,6 +38,7 @@ export const migrations: Migration[] = [
   { name: '20261201154000-add-rehearsals', ...addRehearsals },
   { name: '20261201155000-remember-what-a-key-made', ...rememberWhatAKeyMade },
   { name: '20261202110000-mix-known-candidates', ...mixKnownCandidates },
+  { name: '20261202120000-add-selections-and-exclusions', ...addSelectionsAndExclusions },
   { name: '20261202130000-add-sessions', ...addSessions },
   { name: '20261202140000-add-flow-parts', ...addFlowParts },
 ];

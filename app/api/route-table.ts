@@ -1,7 +1,6 @@
 import { z } from 'zod';
 import type { Action } from '@/lib/access';
 import { campaignCreateSchema, campaignPatchSchema } from '@/lib/schemas/campaign';
-import { compareQuery } from '@/lib/schemas/compare';
 import { exportCreateSchema } from '@/lib/schemas/export';
 import * as lists from '@/lib/schemas/list-query';
 import { analysisCreateSchema, recipeCreateSchema, tryRecipeSchema } from '@/lib/schemas/recipe';
@@ -10,12 +9,12 @@ import { runCreateSchema, runPatchSchema } from '@/lib/schemas/run';
 import * as analysis from '@/lib/views/analysis-view';
 import { campaignViewSchema } from '@/lib/views/campaign-view';
 import { listOf } from '@/lib/views/common';
-import { compareViewSchema } from '@/lib/views/compare-view';
 import { exportViewSchema } from '@/lib/views/export-view';
 import * as lab from '@/lib/views/lab-view';
 import { recipeViewSchema } from '@/lib/views/recipe-view';
 import { recordingViewSchema, uploadViewSchema } from '@/lib/views/recording-view';
 import { runViewSchema } from '@/lib/views/run-view';
+import { COMPARE_ROUTES } from './compare-routes';
 import { CORRECTION_ROUTES } from './correction-routes';
 import { LAB_ROUTES } from './lab-routes';
 import { REVIEW_ROUTES } from './review-routes';
@@ -100,12 +99,7 @@ export const ROUTES = {
     status: 201,
   },
 
-  'GET /compare': {
-    action: 'compare',
-    summary: 'Runs side by side, with the steady law fitted to those of each campaign',
-    query: compareQuery,
-    answer: compareViewSchema,
-  },
+  ...COMPARE_ROUTES,
 
   'GET /runs/{runId}': {
     action: 'list-records',

@@ -5,41 +5,46 @@ import { Plot } from '@/components/charts/plot';
 import { LineMark } from '@/components/charts/plot-marks';
 import { ErrorPoints, seriesLook, SERIES_MOST } from '@/components/charts/series-marks';
 import { EmptyState } from '@/components/ui/page-states';
+import { CONDITIONS, QUANTITIES, type ConditionName, type QuantityName } from '@/lib/compare/quantities';
 import { quantityText } from '@/lib/format/quantity';
 import type { CompareView } from '@/lib/views/compare-view';
 import { comparedPoints, comparedRanges, lawLine } from './compared-points';
-import type { Against } from './use-comparison';
 
-const X_TITLES = {
-  vns: { symbol: 'v', sub: 'ns', unit: 'mm/s' },
-  temperature: { symbol: 'T', unit: 'K' },
-  'heat-flux': { symbol: 'q', unit: 'mW/cm^2' },
-} as const;
-const Y_TITLE = { symbol: 'L', power: '1/2', unit: 'mm^-1' };
 const HEIGHT_PX = 446;
 const GAMMA_S_CM2 = 1e4;
 
-/** Root of the line density of every run against what drives it, with the law fitted to each campaign. */
-export function ComparePlot({ view, against }: { view: CompareView; against: Against }) {
-  const points = comparedPoints(view.runs, against);
+interface ComparePlotProps {
+  view: CompareView;
+  against: ConditionName;
+  quantity: QuantityName;
+}
+
+/** Any quantity of every run against any condition; the root of the line density with the law fitted to each campaign. */
+export function ComparePlot({ view, against, quantity }: ComparePlotProps) {
+  const points = comparedPoints(view.runs, against, quantity);
   if (points.length === 0) {
-    return <EmptyState>No run of this choice has both a line density and a place on this axis.</EmptyState>;
+    return (
+      <EmptyState>
+        No run of this choice has both: {QUANTITIES[quantity].label} and {CONDITIONS[against].label}.
+      </EmptyState>
+    );
   }
-  const ranges = comparedRanges(points, against);
+  const ranges = comparedRanges(points, against, quantity);
   const shown = view.fits.slice(0, SERIES_MOST);
+  const fitted = against === 'vns' && quantity === 'root-density';
   return (
     <>
       <ChartFrame
-        label={sentence(view, against)}
-        fileName={`line-density-against-${against}`}
-        table={table(points, against)}
+        label={sentence(view, against, quantity)}
+        fileName={`${quantity}-against-${against}`}
+        table={table(points, against, quantity)}
       >
         <Plot
           heightPx={HEIGHT_PX}
-          x={{ ...ranges.x, title: X_TITLES[against] }}
-          y={{ ...ranges.y, title: Y_TITLE }}
+          x={{ ...ranges.x, title: CONDITIONS[against].title }}
+          y={{ ...ranges.y, title: QUANTITIES[quantity].title }}
         >
-          {against === 'vns'
+          {fitted
             ? shown.map((fit, index) => (
                 <LineMark
                   key={fit.campaignId}
@@ -67,27 +72,31 @@ export function ComparePlot({ view, against }: { view: CompareView; against: Aga
   );
 }
 
-function sentence({ fits, runs }: CompareView, against: Against): string {
-  const name = { vns: 'counterflow velocity', temperature: 'temperature', 'heat-flux': 'heat flux' }[against];
+function sentence({ fits, runs }: CompareView, against: ConditionName, quantity: QuantityName): string {
+  const what = `${QUANTITIES[quantity].label} of ${runs.length} runs against ${CONDITIONS[against].label}.`;
   const laws = fits.flatMap(({ campaignName, gamma_s_m2 }) =>
     gamma_s_m2
       ? [`${campaignName}: gamma ${quantityText({ ...gamma_s_m2, siPerUnit: GAMMA_S_CM2, unit: 's/cm²' })}`]
       : [],
   );
-  return `Root of the line density of ${runs.length} runs against ${name}. ${laws.join('; ')}`.trim();
+  return `${what[0].toUpperCase()}${what.slice(1)} ${laws.join('; ')}`.trim();
 }
 
-function table(points: ReturnType<typeof comparedPoints>, against: Against) {
-  const { symbol, unit } = X_TITLES[against];
+function table(points: ReturnType<typeof comparedPoints>, against: ConditionName, quantity: QuantityName) {
+  const [x, y] = [CONDITIONS[against], QUANTITIES[quantity]];
   return {
     columns: [
       { name: 'campaign' },
       { name: 'run' },
-      { name: against === 'vns' ? 'v_ns' : symbol, unit },
-      { name: 'L^1/2', unit: 'mm^-1' },
-      { name: 'low, 95 %', unit: 'mm^-1' },
-      { name: 'high, 95 %', unit: 'mm^-1' },
+      { name: x.label, unit: x.title.unit },
+      { name: y.label, unit: y.title.unit },
+      { name: 'low, 95 %', unit: y.title.unit },
+      { name: 'high, 95 %', unit: y.title.unit },
+      { name: 'left out' },
     ],
-    rows: points.map(({ run, x, y, yLow, yHigh }) => [run.campaignName, run.runName, x, y, yLow, yHigh]),
+    rows: points.map((point) => {
+      const { campaignName, runName, leftOut } = point.run;
+      return [campaignName, runName, point.x, point.y, point.yLow, point.yHigh, leftOut ?? ''];
+    }),
   };
 }

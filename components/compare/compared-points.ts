@@ -1,71 +1,63 @@
-import { paddedRange, type AxisRange } from '@/lib/charts/axis-ticks';
 import type { ErrorPoint } from '@/components/charts/series-marks';
-import { rootDensity } from '@/lib/compare/fit-campaigns';
+import { paddedRange, type AxisRange } from '@/lib/charts/axis-ticks';
+import { CONDITIONS, QUANTITIES, type ComparedQuantity, type ConditionName, type QuantityName } from '@/lib/compare/quantities'; // prettier-ignore
 import { DISPLAY_UNITS } from '@/lib/format/unit';
 import type { ComparedFit, ComparedRun } from '@/lib/views/compare-view';
-import type { Against } from './use-comparison';
 
 const PER_MM = 1e-3;
-const { velocity, heatFlux } = DISPLAY_UNITS;
+/** Room beside points on an axis that does not begin at zero, as a share of it. */
+const ROOM = 0.06;
 
-/** Where a run stands on the axis, in the printed unit, with its standard error; null where unknown. */
-function place(run: ComparedRun, against: Against): { value: number; error: number } | null {
-  if (against === 'temperature')
-    return run.temperature_K === null ? null : { value: run.temperature_K, error: 0 };
-  if (against === 'heat-flux') {
-    return run.heatFlux_W_m2 === null ? null : { value: run.heatFlux_W_m2 / heatFlux.siPerUnit, error: 0 };
-  }
-  if (!run.vns_m_s) return null;
-  return {
-    value: Math.abs(run.vns_m_s.value) / velocity.siPerUnit,
-    error: (run.vns_m_s.error ?? 0) / velocity.siPerUnit,
-  };
-}
-
-/** L^(1/2) in 1/mm of the runs that have one, with bars of 95 % up and down and one standard error along. */
+/** Runs that have both quantities, in printed units: bars of 95 % up and down, one standard error along. */
 export function comparedPoints(
   runs: readonly ComparedRun[],
-  against: Against,
+  against: ConditionName,
+  quantity: QuantityName = 'root-density',
 ): (ErrorPoint & { run: ComparedRun })[] {
+  const [across, up]: ComparedQuantity[] = [CONDITIONS[against], QUANTITIES[quantity]];
   return runs.flatMap((run) => {
-    const at = place(run, against);
-    if (!at || !run.lineDensity_m2) return [];
-    const { root } = rootDensity(run.lineDensity_m2);
-    const end = (value: number | null) => (value === null ? root : Math.sqrt(value)) * PER_MM;
+    const [x, y] = [across.of(run), up.of(run)];
+    if (!x || !y) return [];
     return {
       key: run.runId,
       run,
-      x: at.value,
-      xLow: at.value - at.error,
-      xHigh: at.value + at.error,
-      y: root * PER_MM,
-      yLow: end(run.lineDensity_m2.low),
-      yHigh: end(run.lineDensity_m2.high),
-      faint: run.leftOut !== null,
+      x: x.value / across.siPerUnit,
+      xLow: (x.low ?? x.value) / across.siPerUnit,
+      xHigh: (x.high ?? x.value) / across.siPerUnit,
+      y: y.value / up.siPerUnit,
+      yLow: (y.low ?? y.value) / up.siPerUnit,
+      yHigh: (y.high ?? y.value) / up.siPerUnit,
+      // A run without a line density may well have a trapped share; what a person left out stays faint everywhere.
+      faint:
+        quantity === 'root-density' || quantity === 'density' ? run.leftOut !== null : run.exclusion !== null,
     };
   });
 }
 
-/** Axes around all points; velocities and heat fluxes from 0. */
+/** Axes around all points, from zero where that means something. */
 export function comparedRanges(
   points: readonly ErrorPoint[],
-  against: Against,
+  against: ConditionName,
+  quantity: QuantityName = 'root-density',
 ): { x: AxisRange; y: AxisRange } {
-  const ends = points.flatMap(({ xLow, xHigh }) => [xLow, xHigh]);
-  const top = Math.max(...points.map(({ yHigh }) => yHigh));
-  const first = against === 'temperature' ? Math.min(...ends) - 0.02 : 0;
-  const last = Math.max(...ends);
+  const ends = (of: (point: ErrorPoint) => number[], fromZero: boolean, parts: number) => {
+    const all = points.flatMap(of);
+    const [least, most] = [Math.min(...all), Math.max(...all)];
+    const room = ROOM * (most - least || Math.abs(most) || 1);
+    return paddedRange(fromZero ? Math.min(0, least) : least - room, fromZero ? most * 1.04 : most + room, parts); // prettier-ignore
+  };
   return {
-    x: paddedRange(first, against === 'temperature' ? last + 0.02 : last * 1.04, 6),
-    y: paddedRange(0, top * 1.04, 5),
+    x: ends(({ xLow, xHigh }) => [xLow, xHigh], CONDITIONS[against].fromZero, 6),
+    y: ends(({ yLow, yHigh }) => [yLow, yHigh], QUANTITIES[quantity].fromZero, 5),
   };
 }
 
 /** The fitted law from where it leaves zero to the end of the axis, in printed units. */
 export function lawLine({ gamma_s_m2, v0_m_s }: ComparedFit, end: number): { x: number; y: number }[] {
   if (!gamma_s_m2 || !v0_m_s) return [];
-  const slope = gamma_s_m2.value * velocity.siPerUnit * PER_MM;
-  const start = v0_m_s.value / velocity.siPerUnit;
+  const { siPerUnit } = DISPLAY_UNITS.velocity;
+  const slope = gamma_s_m2.value * siPerUnit * PER_MM;
+  const start = v0_m_s.value / siPerUnit;
   const from = Math.max(0, start);
   return [
     { x: from, y: slope * (from - start) },

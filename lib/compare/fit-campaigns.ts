@@ -9,6 +9,7 @@ const TEMPERATURE_SPAN_K = 0.05;
 
 /** Why a run can't take part in the fit of L^(1/2) against v_ns; null where it can. */
 export function whyLeftOut(run: Omit<ComparedRun, 'leftOut'>): string | null {
+  if (run.exclusion !== null) return `Left out by ${run.exclusion.by}: ${run.exclusion.reason}`;
   if (run.analysisId === null) return 'No analysis of this run is done.';
   const density = run.lineDensity_m2;
   if (density === null) return 'The method gives no line density here.';

@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { checkRanges, selectionFields } from './selection';
 
 /** Ways to the line density that runs can be compared by. */
 export const COMPARED_METHODS = [
@@ -7,45 +8,41 @@ export const COMPARED_METHODS = [
   'neighbour-distance',
   'beads-per-length',
   'line-velocity',
+  'free-path',
+  'visible-length',
 ] as const;
 
-/** Campaigns in one comparison at most. */
-export const COMPARED_CAMPAIGNS_MOST = 20;
+const method = z
+  .enum(COMPARED_METHODS, `method must be one of ${COMPARED_METHODS.join(', ')}.`)
+  .default('combined');
 
-const kelvin = (name: string) =>
-  z.coerce
-    .number(`${name} must be a temperature in kelvin.`)
-    .min(0, `${name} must be 0 to 10 K.`)
-    .max(10, `${name} must be 0 to 10 K.`)
-    .optional();
-
-/** What is compared: campaigns by their ids with commas between, all where none is named. */
-export const compareQuery = z
-  .strictObject({
-    campaigns: z
-      .string()
-      .transform((text) => text.split(',').filter(Boolean))
-      .pipe(
-        z
-          .array(z.uuid('campaigns must be ids with commas between.'))
-          .max(
-            COMPARED_CAMPAIGNS_MOST,
-            `At most ${COMPARED_CAMPAIGNS_MOST} campaigns can be compared at once.`,
-          ),
-      )
-      .optional(),
-    temperatureFrom_K: kelvin('temperatureFrom_K'),
-    temperatureTo_K: kelvin('temperatureTo_K'),
-    method: z
-      .enum(COMPARED_METHODS, `method must be one of ${COMPARED_METHODS.join(', ')}.`)
-      .default('combined'),
-  })
-  .refine(
-    ({ temperatureFrom_K: from, temperatureTo_K: to }) =>
-      from === undefined || to === undefined || from <= to,
-    {
-      error: 'temperatureFrom_K must not be above temperatureTo_K.',
-      path: ['temperatureFrom_K'],
-    },
-  );
+/** What is compared: the selection, and the method that gives the line density of plot and fit. */
+export const compareQuery = z.strictObject({ ...selectionFields, method }).superRefine(checkRanges);
 export type CompareQuery = z.output<typeof compareQuery>;
+
+export const POOLED_POPULATIONS = ['trapped', 'free', 'undecided', 'all'] as const;
+export const POOLED_COMPONENTS = ['along', 'across', 'x', 'y', 'speed'] as const;
+/** Scales that velocities of different runs are brought to. */
+export const POOLED_SCALES = ['none', 'deviation', 'kappa-over-spacing'] as const;
+
+export const pooledPdfQuery = z
+  .strictObject({
+    ...selectionFields,
+    population: z
+      .enum(POOLED_POPULATIONS, `population must be one of ${POOLED_POPULATIONS.join(', ')}.`)
+      .default('all'),
+    component: z
+      .enum(POOLED_COMPONENTS, `component must be one of ${POOLED_COMPONENTS.join(', ')}.`)
+      .default('across'),
+    /** Of each run the distribution at the lag next to this one; at its shortest where none is named. */
+    lag_s: z.coerce
+      .number('lag_s must be a time in seconds.')
+      .positive('lag_s must be above 0 s.')
+      .max(1e4)
+      .optional(),
+    scale: z.enum(POOLED_SCALES, `scale must be one of ${POOLED_SCALES.join(', ')}.`).default('none'),
+  })
+  .superRefine(checkRanges);
+export type PooledPdfQuery = z.output<typeof pooledPdfQuery>;
+
+export const courseQuery = z.strictObject(selectionFields).superRefine(checkRanges);

@@ -135,6 +135,14 @@ export const fileCheckListQuery = listQuery(['checkedAt'], {
     .optional(),
 });
 export const exportListQuery = listQuery(['createdAt'], { state: states(EXPORT_STATES) });
+export const selectionListQuery = listQuery(['name', 'createdAt'], { q: text });
+export const searchQuery = z.strictObject({
+  q: z
+    .string('Type what to look for.')
+    .trim()
+    .min(1, 'Type what to look for.')
+    .max(200, 'At most 200 characters.'),
+});
 export const workerListQuery = listQuery(['startedAt', 'heartbeatAt'], {});
 export const uploadListQuery = listQuery(['createdAt'], {});
 

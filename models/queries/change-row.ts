@@ -12,7 +12,7 @@ export interface Change {
   ifMatch: number[] | null;
 }
 
-type Table = 'campaigns' | 'runs' | 'recordings' | 'memberships';
+type Table = 'campaigns' | 'runs' | 'recordings' | 'memberships' | 'saved_selections';
 
 /**
  * Writes columns of a row if it still has the revision that the change starts from, in one

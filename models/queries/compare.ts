@@ -1,102 +1,109 @@
-import { QueryTypes } from 'sequelize';
-import type { AnalysisSummary } from '@/lib/analysis-facts';
+import { eventRate } from '@/lib/compare/event-rate';
 import { fitCampaigns, whyLeftOut } from '@/lib/compare/fit-campaigns';
-import type { CompareQuery } from '@/lib/schemas/compare';
+import { COMPARED_METHODS, type CompareQuery } from '@/lib/schemas/compare';
 import type { ComparedRun, CompareView } from '@/lib/views/compare-view';
-import type { Estimate } from '@/tracking/estimates/estimate';
-import { deriveRun } from '@/tracking/flow/derive-run';
 import type { DerivedEntry } from '@/tracking/flow/derived-run';
-import type { RunConditions } from '@/tracking/flow/run-conditions';
-import type { PopulationSummary } from '@/tracking/flow-measures';
-import { getSequelize } from '../database';
-import { CONDITION_COLUMNS, conditionsOf, type ConditionRow } from './run-columns';
-
-/** Runs in one comparison at most. */
-const RUNS_MOST = 500;
-
-interface Row extends ConditionRow {
-  id: string;
-  name: string;
-  campaign_id: string;
-  campaign_name: string;
-  found: {
-    analysisId: string;
-    summary: AnalysisSummary;
-    estimates: Estimate[] | null;
-    trapped: PopulationSummary['trappedFraction'];
-  } | null;
-}
-
-const CONDITIONS = Object.values(CONDITION_COLUMNS)
-  .map((column) => `r.${column}`)
-  .join(', ');
-
-/** The newest finished analysis of run `r`, with what is compared of it. */
-const NEWEST = `(
-  SELECT json_build_object('analysisId', a.id, 'summary', a.summary,
-    'estimates', (SELECT jsonb_path_query_array(m.estimates, '$[*] ? (@.quantity == "line_density")')),
-    'trapped', m.populations->'trappedFraction')
-  FROM analyses a JOIN recordings g ON g.id = a.recording_id
-  JOIN analysis_measures m ON m.analysis_id = a.id
-  WHERE g.run_id = r.id AND g.deleted_at IS NULL AND a.state = 'done' AND a.summary IS NOT NULL
-  ORDER BY a.finished_at DESC NULLS LAST, a.id DESC, m.tracks_revision DESC LIMIT 1)`;
+import { iso } from './person';
+import { agreementOf } from './run-agreement';
+import { selectRows } from './select';
+import { selectedRuns, type ChosenAnalysis, type SelectedRun } from './selected-runs';
 
 /** Runs of a laboratory side by side, and the steady law fitted to those of each campaign. */
-export async function compareRuns(labId: string, query: CompareQuery): Promise<CompareView> {
-  const bind: unknown[] = [labId];
-  const where = ['r.lab_id = $1', 'r.deleted_at IS NULL', 'c.deleted_at IS NULL', 'NOT c.rehearsal'];
-  if (query.campaigns && query.campaigns.length > 0) {
-    where.push(`r.campaign_id = ANY($${bind.push(query.campaigns)}::uuid[])`);
-  }
-  if (query.temperatureFrom_K !== undefined) {
-    where.push(`r.temperature_k >= $${bind.push(query.temperatureFrom_K)}`);
-  }
-  if (query.temperatureTo_K !== undefined) {
-    where.push(`r.temperature_k <= $${bind.push(query.temperatureTo_K)}`);
-  }
-  const sequelize = getSequelize();
-  const rows = await sequelize.query<Row>(
-    `SELECT r.id, r.name, r.campaign_id, c.name AS campaign_name, ${CONDITIONS}, ${NEWEST} AS found
-     FROM runs r JOIN campaigns c ON c.id = r.campaign_id
-     WHERE ${where.join(' AND ')} ORDER BY c.created_at, c.id, r.created_at, r.id LIMIT ${RUNS_MOST + 1}`,
-    { bind, type: QueryTypes.SELECT },
-  );
-  const campaigns = await sequelize.query<{ id: string; name: string; runs: number }>(
+export async function compareRuns(
+  labId: string,
+  { method, ...selection }: CompareQuery,
+): Promise<CompareView> {
+  const { runs: found, cut } = await selectedRuns(labId, selection);
+  const [campaigns, tags, agreement] = await Promise.all([
+    campaignsToChoose(labId),
+    tagsToChoose(labId),
+    agreementOf(labId, found.flatMap((run) => run.found?.analysisId ?? [])), // prettier-ignore
+  ]);
+  const runs = found.map((run) => comparedRun(run, method, agreement));
+  return { method, campaigns, tags, runs, fits: fitCampaigns(runs), cut };
+}
+
+/** Every campaign of the laboratory with the number of its runs. */
+export const campaignsToChoose = (labId: string): Promise<CompareView['campaigns']> =>
+  selectRows(
     `SELECT c.id, c.name, count(r.id)::int AS runs FROM campaigns c
      JOIN runs r ON r.campaign_id = c.id AND r.deleted_at IS NULL
      WHERE c.lab_id = $1 AND c.deleted_at IS NULL AND NOT c.rehearsal GROUP BY c.id ORDER BY c.created_at, c.id`,
-    { bind: [labId], type: QueryTypes.SELECT },
+    [labId],
   );
-  const runs = rows.slice(0, RUNS_MOST).map((row) => comparedRun(row, query.method));
-  return { method: query.method, campaigns, runs, fits: fitCampaigns(runs), cut: rows.length > RUNS_MOST };
+
+/** Every tag of a run or a campaign. */
+export async function tagsToChoose(labId: string): Promise<string[]> {
+  const rows = await selectRows<{ tag: string }>(
+    `SELECT DISTINCT tag FROM (
+       SELECT unnest(r.tags) AS tag FROM runs r WHERE r.lab_id = $1 AND r.deleted_at IS NULL
+       UNION ALL
+       SELECT unnest(c.tags) FROM campaigns c WHERE c.lab_id = $1 AND c.deleted_at IS NULL AND NOT c.rehearsal) t
+     ORDER BY tag LIMIT 200`,
+    [labId],
+  );
+  return rows.map(({ tag }) => tag);
 }
 
-function comparedRun(row: Row, method: string): ComparedRun {
-  const conditions = conditionsOf(row);
-  const { entries } = deriveRun(conditions as RunConditions);
-  const density = row.found?.estimates?.find((estimate) => estimate.method === method);
-  const run = {
+function comparedRun(
+  row: SelectedRun,
+  method: string,
+  agreement: Awaited<ReturnType<typeof agreementOf>>,
+): ComparedRun {
+  const { conditions, found } = row;
+  const densities = densitiesOf(found);
+  const { method: _own, ...density } = densities.find((one) => one.method === method) ?? { method: null };
+  const run: Omit<ComparedRun, 'leftOut'> = {
     campaignId: row.campaign_id,
     campaignName: row.campaign_name,
     runId: row.id,
     runName: row.name,
-    analysisId: row.found?.analysisId ?? null,
+    startedAt: iso(row.started_at),
+    tags: row.tags,
+    analysisId: found?.analysisId ?? null,
     drive: conditions.drive ?? null,
     temperature_K: conditions.temperature_K ?? null,
+    pressure_Pa: conditions.pressure_Pa ?? null,
     heatFlux_W_m2: conditions.heatFlux_W_m2 ?? null,
-    vn_m_s: withError(entries.vn_m_s),
-    vns_m_s: withError(entries.vns_m_s),
-    lineDensity_m2:
-      density && density.value !== null
-        ? { value: density.value, low: density.low, high: density.high }
-        : null,
-    trappedShare: row.found?.trapped
-      ? { value: row.found.trapped.value, low: row.found.trapped.low, high: row.found.trapped.high }
+    vn_m_s: withError(row.vn),
+    vs_m_s: withError(row.vs),
+    vns_m_s: withError(row.vns),
+    lineDensity_m2: 'value' in density ? density : null,
+    lineDensities_m2: densities,
+    trappedShare: found?.trapped
+      ? { value: found.trapped.value, low: found.trapped.low, high: found.trapped.high }
       : null,
-    tracks: row.found?.summary.tracks ?? null,
-    acceptedCandidates: row.found?.summary.acceptedCandidates ?? null,
+    tracks: found?.summary.tracks ?? null,
+    acceptedCandidates: found?.summary.acceptedCandidates ?? null,
+    // Where nobody has judged yet, no event is not the same as none.
+    events: found && {
+      ...found.events,
+      perVolumeTime_m3_s:
+        found.events.judged === 0 && found.events.candidates > 0
+          ? null
+          : eventRate(found.events.confirmed, found),
+    },
+    tailExponent: tailOf(found),
+    agreement: (found && agreement.get(found.analysisId)) ?? null,
+    signedOff: found?.signedOffAt
+      ? { at: new Date(found.signedOffAt).toISOString(), by: found.signedOffBy }
+      : null,
+    exclusion: row.exclusion && { ...row.exclusion, at: new Date(row.exclusion.at).toISOString() },
   };
   return { ...run, leftOut: whyLeftOut(run) };
+}
+
+function densitiesOf(found: ChosenAnalysis | null): ComparedRun['lineDensities_m2'] {
+  const known = (found?.estimates ?? []).filter(({ quantity }) => quantity === 'line_density');
+  return COMPARED_METHODS.flatMap((method) => {
+    const one = known.find((estimate) => estimate.method === method);
+    return one && one.value !== null ? [{ method, value: one.value, low: one.low, high: one.high }] : [];
+  });
+}
+
+function tailOf(found: ChosenAnalysis | null): ComparedRun['tailExponent'] {
+  const tail = (found?.tails ?? []).filter(({ exponent }) => exponent !== null).sort((a, b) => a.lagS - b.lagS)[0]; // prettier-ignore
+  return tail ? { value: tail.exponent!, low: tail.exponentLow, high: tail.exponentHigh } : null;
 }
 
 function withError({ value, relativeError }: DerivedEntry): { value: number; error: number | null } | null {

@@ -27,6 +27,7 @@ const SUBJECT_NAME = `CASE
   ${named('run', 's.name FROM runs s')}
   ${named('recording', 's.name FROM recordings s')}
   ${named('rehearsal', 's.name FROM rehearsals s')}
+  ${named('selection', 's.name FROM saved_selections s')}
   ${named('token', 's.name FROM api_tokens s')}
   ${named('export', 's.title FROM exports s')}
   ${named('analysis', '(SELECT r.name FROM recordings r WHERE r.id = s.recording_id) FROM analyses s')}

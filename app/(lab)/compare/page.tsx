@@ -1,6 +1,7 @@
 import type { Metadata } from 'next';
 import { Suspense } from 'react';
 import { requireViewer } from '@/auth/page';
+import { may, mayTo } from '@/auth/viewer';
 import { CompareSheet } from '@/components/compare/compare-sheet';
 import { PathThread } from '@/components/ui/path-thread';
 import { pathLevels } from '../path-levels';
@@ -13,7 +14,13 @@ export default async function ComparePage() {
     <>
       <PathThread levels={pathLevels(viewer)} />
       <Suspense>
-        <CompareSheet />
+        <CompareSheet
+          viewer={{
+            id: viewer.userId,
+            mayEditAll: mayTo(viewer, 'edit-selection', []),
+            mayLeaveOut: may(viewer, 'leave-out-run'),
+          }}
+        />
       </Suspense>
     </>
   );

@@ -9,6 +9,7 @@ import { addExport } from '@/models/queries/exports';
 import { addMail } from '@/models/queries/mails';
 import { addRehearsal } from '@/models/queries/rehearsal-work';
 import { addSession } from '@/models/queries/sessions';
+import { saveSelection } from '@/models/queries/saved-selections';
 import { closeSessionLocks } from '@/models/session-locks';
 import { call, routeModule, routePaths, webSettings } from '../../helpers/call-route';
 import { freshDatabase, type FreshDatabase } from '../../helpers/fresh-database';
@@ -130,7 +131,12 @@ async function makeThings(): Promise<Things> {
       transaction,
     ),
   );
+  const selection = await saveSelection(
+    { labId: own.labId, userId: maker.userId },
+    { name: `Selection ${newId()}`, filters: { temperatureFrom_K: '1.8' } },
+  );
   return {
+    selectionId: selection.id,
     rehearsalId,
     mailId: mail,
     jobId: job.id,
@@ -175,6 +181,9 @@ const BODIES: Partial<Record<RouteKey, unknown>> = {
   'POST /rehearsals': { name: 'New', conditions: REHEARSAL_PLAN.conditions, scene: { lineDensity_m2: 1e7 } },
   'POST /people': { name: 'New', email: 'new@lab.test', roles: ['analyst'] },
   'POST /tokens': { name: 'New' },
+  'POST /selections': { name: 'New', filters: {} },
+  'PATCH /selections/{selectionId}': { filters: { signedOff: 'yes' } },
+  'PUT /runs/{runId}/exclusion': { reason: 'The heater was off.' },
   'PUT /candidates/{candidateId}/verdict': { verdict: 'yes' },
   'POST /candidates/{candidateId}/settlement': { verdict: 'yes', reason: 'Seen.' },
 };
@@ -198,7 +207,14 @@ function send(key: RouteKey, token: string | undefined) {
     headers['content-type'] = 'application/offset+octet-stream';
     headers['upload-offset'] = '5';
   }
-  const query = path.endsWith('/tracks') ? '?from=0&to=1' : path.endsWith('/track-points') ? '?tracks=0' : '';
+  const query =
+    path === '/search'
+      ? '?q=run'
+      : path.endsWith('/tracks')
+        ? '?from=0&to=1'
+        : path.endsWith('/track-points')
+          ? '?tracks=0'
+          : '';
   return call(method, pathOf(key) + query, { token, headers, json: bodyOf(key) });
 }
 

@@ -1,6 +1,6 @@
 import { describe, expect, test } from 'vitest';
 import { comparedPoints, lawLine } from '@/components/compare/compared-points';
-import { orderRuns } from '@/components/compare/order-runs';
+import { sortedRuns } from '@/components/compare/run-columns';
 import { fitCampaigns, rootDensity, whyLeftOut } from '@/lib/compare/fit-campaigns';
 import { compareQuery } from '@/lib/schemas/compare';
 import type { ComparedRun } from '@/lib/views/compare-view';
@@ -22,6 +22,16 @@ function run(vns: number | null, fields: Partial<ComparedRun> = {}): ComparedRun
     temperature_K: 1.75,
     heatFlux_W_m2: 300,
     vn_m_s: null,
+    vs_m_s: null,
+    startedAt: null,
+    tags: [],
+    pressure_Pa: null,
+    lineDensities_m2: [],
+    events: null,
+    tailExponent: null,
+    agreement: null,
+    signedOff: null,
+    exclusion: null,
     vns_m_s: vns === null ? null : { value: vns, error: 0.03 * vns },
     lineDensity_m2: { value, low: value / 1.2, high: value * 1.2 },
     trappedShare: null,
@@ -63,9 +73,10 @@ describe('the law fitted to a campaign', () => {
       run(6e-3, { analysisId: null }),
       run(7e-3, { lineDensity_m2: { value: 1e8, low: null, high: null } }),
       run(0, { vns_m_s: { value: 0, error: 0 } }),
+      run(9e-3, { exclusion: { reason: 'The heater was off.', by: 'A', at: '2026-01-01T00:00:00Z' } }),
     ];
     for (const { leftOut } of none) expect(leftOut).toMatch(/\.$/);
-    expect(new Set(none.map(({ leftOut }) => leftOut)).size).toBe(5);
+    expect(new Set(none.map(({ leftOut }) => leftOut)).size).toBe(6);
     const [fit] = fitCampaigns([...none, run(4e-3), run(8e-3), run(12e-3)]);
     expect(fit.runs).toBe(3);
   });
@@ -97,12 +108,12 @@ describe('the plot', () => {
 describe('the table', () => {
   test('is ordered by any column, unknown values last either way', () => {
     const runs = [run(8e-3), run(null), run(4e-3)];
-    expect(orderRuns(runs, 'vns').map(({ runName }) => runName)).toEqual([
+    expect(sortedRuns(runs, 'vns').map(({ runName }) => runName)).toEqual([
       'run 0.004',
       'run 0.008',
       'run null',
     ]);
-    expect(orderRuns(runs, '-vns').map(({ runName }) => runName)).toEqual([
+    expect(sortedRuns(runs, '-vns').map(({ runName }) => runName)).toEqual([
       'run 0.008',
       'run 0.004',
       'run null',
@@ -113,7 +124,10 @@ describe('the table', () => {
 describe('what may be asked', () => {
   test.each([
     [{ campaigns: 'x' }, /ids with commas/],
-    [{ temperatureFrom_K: 'warm' }, /in kelvin/],
+    [{ temperatureFrom_K: 'warm' }, /number from 0 to 10 K/],
+    [{ vnsFrom_m_s: '0.02', vnsTo_m_s: '0.01' }, /must not be above/],
+    [{ drives: 'rocket' }, /drives must be of/],
+    [{ signedOff: 'maybe' }, /yes or no/],
     [{ temperatureFrom_K: '2', temperatureTo_K: '1.5' }, /must not be above/],
     [{ method: 'guess' }, /must be one of/],
   ])('%j is refused in a sentence', (query, sentence) => {
