@@ -131,7 +131,7 @@ export function AnalysisSheet({
                 data ? (
                   <>
                     <EstimatesSection estimates={data.estimates} />
-                    {data.details ? <ComparisonSection comparisons={data.details.comparisons} /> : null}
+                    {data.details ? <DetailSections details={data.details} /> : null}
                   </>
                 ) : null
               }
@@ -171,7 +171,6 @@ export function AnalysisSheet({
           />
         </div>
       </div>
-      {done && measures.data?.details ? <DetailSections details={measures.data.details} /> : null}
       {done ? (
         <Answer query={candidates} what="the candidates">
           {(list) => (
@@ -212,19 +211,16 @@ export function AnalysisSheet({
   );
 }
 
-/** The course over time beside the profiles across the channel, and the shape of the lines. */
+/** Under the frames, beside populations and velocities: what is expected, the course over time, profiles, shape. */
 function DetailSections({ details }: { details: DetailsView }) {
   const expected = details.comparisons.find(({ what }) => what === 'trapped along')?.expected ?? [];
   return (
-    <div className={TWO_COLUMNS}>
-      <div className="min-w-0">
-        <OverTimeSection overTime={details.overTime} />
-        {details.shape ? <ShapeSection shape={details.shape} /> : null}
-      </div>
-      <div className="min-w-0">
-        <ProfilesSection profiles={details.profiles} expected={expected.filter(({ value }) => value !== 0)} />
-      </div>
-    </div>
+    <>
+      <ComparisonSection comparisons={details.comparisons} />
+      <OverTimeSection overTime={details.overTime} />
+      <ProfilesSection profiles={details.profiles} expected={expected.filter(({ value }) => value !== 0)} />
+      {details.shape ? <ShapeSection shape={details.shape} /> : null}
+    </>
   );
 }
 

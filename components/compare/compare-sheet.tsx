@@ -81,7 +81,14 @@ function RunsPanel({ comparison, mayLeaveOut }: { comparison: Comparison; mayLea
             <>
               <Lede>{ledeWords(found)}</Lede>
               <ComparePlot view={found} against={against} quantity={quantity} />
-              <Section title="Runs" count={countOf(found.runs.length, 'run')}>
+              <Section
+                title="Runs"
+                count={countOf(found.runs.length, 'run')}
+                more={{
+                  href: `/exports${comparison.selection.query ? `?${comparison.selection.query}` : ''}`,
+                  label: 'Put these into a data package',
+                }}
+              >
                 <ColumnChoice columns={columns} set={set} />
                 <CompareTable
                   runs={sortedRuns(found.runs, sort)}

@@ -14,7 +14,8 @@ interface CompareTableProps {
   campaigns: readonly string[];
   /** Keys of the columns that are shown. */
   columns: readonly string[];
-  sortBy: (field: string) => { href: string; current: 'ascending' | 'descending' | null };
+  /** Left out where the order stands, as on paper. */
+  sortBy?: (field: string) => { href: string; current: 'ascending' | 'descending' | null };
   mayLeaveOut: boolean;
 }
 
@@ -27,14 +28,14 @@ export function CompareTable({ runs, campaigns, columns, sortBy, mayLeaveOut }: 
       <Table label="Runs compared">
         <thead>
           <tr>
-            <HeadCell sort={sortBy('campaign')}>Run</HeadCell>
+            <HeadCell sort={sortBy?.('campaign')}>Run</HeadCell>
             {shown.map(({ key, head, unit, numeric, narrow, sort }) => (
               <HeadCell
                 key={key}
                 numeric={numeric}
                 unit={unit}
                 narrow={narrow ? undefined : 'hide'}
-                sort={sort ? sortBy(key) : undefined}
+                sort={sort ? sortBy?.(key) : undefined}
               >
                 {head}
               </HeadCell>

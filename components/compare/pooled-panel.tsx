@@ -157,7 +157,7 @@ interface PooledChartProps {
   log: boolean;
 }
 
-function PooledChart({ curves, scale, log }: PooledChartProps) {
+export function PooledChart({ curves, scale, log }: PooledChartProps) {
   const axis = pooledAxis(scale);
   const drawn = curves.map((curve) => ({ ...curve, points: pooledPoints(curve.view, axis.siPerUnit) }));
   const ranges = pooledRanges(drawn.map(({ points }) => points), log); // prettier-ignore

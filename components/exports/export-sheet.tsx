@@ -3,6 +3,8 @@
 import { useQueryClient } from '@tanstack/react-query';
 import { useState } from 'react';
 import { api, ApiError } from '@/components/data/api-client';
+import { SelectionBar } from '@/components/selection/selection-bar';
+import { useSelection } from '@/components/selection/use-selection';
 import { Button } from '@/components/ui/button';
 import { Checkbox, SelectField } from '@/components/ui/choice';
 import { Field, TextArea } from '@/components/ui/field';
@@ -29,13 +31,32 @@ interface ExportSheetProps {
   analyses: readonly ExportableAnalysis[];
   /** Of the last package, to begin with. */
   contributors: readonly { name: string; orcid: string | null; affiliation: string | null }[];
-  viewer: { id: string; name: string; mayStopAll: boolean };
+  viewer: { id: string; name: string; mayStopAll: boolean; mayEditAll: boolean };
   chosen: readonly string[];
-  campaignId: string;
+  campaigns: readonly { id: string; name: string; runs: number }[];
+  tags: readonly string[];
+}
+
+/** Every analysis that was offered so far, by id. */
+function useSeen(analyses: readonly ExportableAnalysis[]): ReadonlyMap<string, ExportableAnalysis> {
+  const [seen, setSeen] = useState(() => new Map(analyses.map((one) => [one.id, one])));
+  const fresh = analyses.filter(({ id }) => !seen.has(id));
+  if (fresh.length > 0) setSeen(new Map([...seen, ...fresh.map((one) => [one.id, one] as const)]));
+  return seen;
 }
 
 /** A data package in three steps, and those that were made before. */
-export function ExportSheet({ analyses, contributors, viewer, chosen: first, campaignId }: ExportSheetProps) {
+export function ExportSheet({
+  analyses,
+  contributors,
+  viewer,
+  chosen: first,
+  campaigns,
+  tags,
+}: ExportSheetProps) {
+  // prettier-ignore
+  const selection = useSelection();
+  const seen = useSeen(analyses);
   const client = useQueryClient();
   const [chosen, setChosen] = useState<ReadonlySet<string>>(() => new Set(first));
   const [formats, setFormats] = useState<readonly ExportFormat[]>(['csv']);
@@ -84,7 +105,8 @@ export function ExportSheet({ analyses, contributors, viewer, chosen: first, cam
     }
   }
 
-  const points = analyses.filter(({ id }) => chosen.has(id)).reduce((sum, one) => sum + one.points, 0);
+  // What was chosen under another selection goes in as well.
+  const points = [...chosen].reduce((sum, id) => sum + (seen.get(id)?.points ?? 0), 0);
   return (
     <Sheet
       marginLabel="Contents of the package"
@@ -100,11 +122,12 @@ export function ExportSheet({ analyses, contributors, viewer, chosen: first, cam
     >
       <PageTitle>Exports</PageTitle>
       <Section title="1 Choose" count={chosen.size > 0 ? `${chosen.size} chosen` : undefined}>
+        <SelectionBar selection={selection} campaigns={campaigns} tags={tags} viewer={viewer} />
         <ChooseAnalyses
           analyses={analyses}
           chosen={chosen}
           onChoose={setChosen}
-          firstCampaignId={campaignId}
+          narrowed={selection.query !== ''}
         />
         <fieldset className="min-w-0 mt-4">
           <legend className="text-small text-ink-2">Formats of the tables</legend>

@@ -4,6 +4,7 @@ import Link from 'next/link';
 import { usePathname } from 'next/navigation';
 import type { ReactNode } from 'react';
 import { Wordmark } from '@/components/ui/wordmark';
+import { HeadSearch } from './head-search';
 import { currentPlace, type Place } from './places';
 import { useOnline } from './use-online';
 import { UserMenu, type Viewer } from './user-menu';
@@ -50,6 +51,7 @@ export function Head({ places, viewer, switchLab, work }: HeadProps) {
         </nav>
         <div className="ml-auto flex items-center gap-[14px] text-note text-ink-2 print:hidden">
           {work ? <span className="max-desk:hidden">{work}</span> : null}
+          <HeadSearch />
           <span className="-mr-2 text-ink max-hand:hidden">
             <UserMenu viewer={viewer} switchLab={switchLab} button={viewer.name} />
           </span>

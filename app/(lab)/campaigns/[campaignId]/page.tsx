@@ -47,6 +47,9 @@ export default async function CampaignPage({ params }: Props) {
       save={editCampaign.bind(null, campaign.id, campaign.revision)}
     />
   ) : null;
+  const report = may(viewer, 'compare') ? (
+    <ButtonLink href={`/campaigns/${campaignId}/report`}>Report</ButtonLink>
+  ) : null;
   const facts = [
     { name: 'Begun', value: <Moment at={campaign.createdAt} /> },
     { name: 'By', value: campaign.createdBy?.name ?? '' },
@@ -72,8 +75,9 @@ export default async function CampaignPage({ params }: Props) {
       <PathThread
         levels={pathLevels(viewer, { campaign })}
         actions={
-          edit || addRun ? (
+          edit || addRun || report ? (
             <>
+              {report}
               {edit}
               {addRun}
             </>
