@@ -38,6 +38,12 @@ const PAGES: Partial<Record<Role, string[]>> = {
     '/analyses',
     '/analyses/ANALYSIS',
     '/compare',
+    '/compare?view=velocities&scale=deviation',
+    '/compare?view=courses',
+    '/compare?view=profiles',
+    '/campaigns/CAMPAIGN/report',
+    '/exports',
+    '/search?q=run',
     '/account',
     '/nowhere',
   ],
@@ -138,7 +144,18 @@ describe.each(THEMES)('every page in the %s theme', (theme) => {
   );
 
   it('says what to do where there is nothing yet', async () => {
-    const pages = ['/', '/campaigns', '/analyses', '/review', '/compare', '/rehearsals', '/lab/tokens'];
+    const pages = [
+      '/',
+      '/campaigns',
+      '/analyses',
+      '/review',
+      '/compare',
+      '/compare?view=velocities',
+      '/exports',
+      '/search',
+      '/rehearsals',
+      '/lab/tokens',
+    ];
     await look(empty, 'principal_investigator', pages, theme, 'wide', 'empty');
   }, 60_000);
 

@@ -2,6 +2,7 @@ import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { closeDoorbell } from '@/jobs/doorbell';
 import { newId } from '@/lib/ids';
 import { compareViewSchema, coursesSchema, pooledPdfSchema, savedSelectionSchema } from '@/lib/views/compare-view'; // prettier-ignore
+import { problemSchema } from '@/lib/views/common';
 import { searchViewSchema } from '@/lib/views/search-view';
 import { models } from '@/models';
 import { getSequelize } from '@/models/database';
@@ -272,6 +273,27 @@ describe('saved selections', () => {
     const answer = await post(json);
     expect(answer.status).toBe(422);
     expect((await answer.json()).errors[0].message).toMatch(/\.$/);
+  });
+});
+
+describe('whoever asks for too much', () => {
+  it('gets 429 with Retry-After and a problem document that names the bound; reading goes on', async () => {
+    process.env.BEADLINE_LIMIT_CHANGES_PER_MINUTE = '3';
+    const { token: own4 } = own.people.principal_investigator;
+    const ask = () =>
+      call('POST', '/api/v1/selections', { token: own4, json: { name: newId(), filters: {} } });
+    let answer = await ask();
+    for (let i = 0; i < 8 && answer.status !== 429; i++) answer = await ask();
+    delete process.env.BEADLINE_LIMIT_CHANGES_PER_MINUTE;
+    expect(answer.status).toBe(429);
+    expect(answer.headers.get('content-type')).toBe('application/problem+json');
+    const waitS = Number(answer.headers.get('retry-after'));
+    expect(waitS).toBeGreaterThan(0);
+    expect(waitS).toBeLessThanOrEqual(60);
+    const problem = problemSchema.parse(await answer.json());
+    expect(problem.code).toBe('TOO_MANY');
+    expect(problem.detail).toMatch(/^More than 3 changes a minute\. Wait \d+ s\.$/);
+    expect((await call('GET', '/api/v1/selections', { token: own4 })).status).toBe(200);
   });
 });
 
