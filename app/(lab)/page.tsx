@@ -81,7 +81,13 @@ export default async function OverviewPage() {
       <Sheet margin={margin} marginLabel="Notes">
         <h1 className="sr-only">Overview</h1>
         <Lede>
-          <OverviewSentence name={viewer.name} overview={overview} seesData={seesData} review={review} />
+          <OverviewSentence
+            name={viewer.name}
+            overview={overview}
+            seesData={seesData}
+            review={review}
+            signs={may(viewer, 'sign-off')}
+          />
         </Lede>
         {overview.arriving.length > 0 ? (
           <Section id="uploads" title="Uploads to finish" count={countOf(overview.arriving.length, 'stack')}>

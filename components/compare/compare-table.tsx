@@ -17,10 +17,19 @@ interface CompareTableProps {
   /** Left out where the order stands, as on paper. */
   sortBy?: (field: string) => { href: string; current: 'ascending' | 'descending' | null };
   mayLeaveOut: boolean;
+  /** Without the last column, where something else says what is left out. */
+  bare?: boolean;
 }
 
 /** All runs of the comparison with what was set and what was found. */
-export function CompareTable({ runs, campaigns, columns, sortBy, mayLeaveOut }: CompareTableProps) {
+export function CompareTable({
+  runs,
+  campaigns,
+  columns,
+  sortBy,
+  mayLeaveOut,
+  bare = false,
+}: CompareTableProps) {
   const [asked, setAsked] = useState<ComparedRun | null>(null);
   const shown = RUN_COLUMNS.filter(({ key }) => columns.includes(key));
   return (
@@ -40,7 +49,7 @@ export function CompareTable({ runs, campaigns, columns, sortBy, mayLeaveOut }: 
                 {head}
               </HeadCell>
             ))}
-            <HeadCell narrow="hide">In the fit</HeadCell>
+            {bare ? null : <HeadCell narrow="hide">In the fit</HeadCell>}
           </tr>
         </thead>
         <tbody>
@@ -64,19 +73,21 @@ export function CompareTable({ runs, campaigns, columns, sortBy, mayLeaveOut }: 
                   {cell(run)}
                 </Cell>
               ))}
-              <Cell narrow="hide" quiet className="max-w-[220px] [overflow-wrap:anywhere]">
-                {run.leftOut ?? 'yes'}{' '}
-                {mayLeaveOut ? (
-                  <button
-                    type="button"
-                    className="text-note underline decoration-violet underline-offset-[3px] hover:text-ink print:hidden"
-                    aria-label={`${run.exclusion ? 'Take in again' : 'Leave out'}: ${run.runName}`}
-                    onClick={() => setAsked(run)}
-                  >
-                    {run.exclusion ? 'take in again' : 'leave out'}
-                  </button>
-                ) : null}
-              </Cell>
+              {bare ? null : (
+                <Cell narrow="hide" quiet className="max-w-[220px] [overflow-wrap:anywhere]">
+                  {run.leftOut ?? 'yes'}{' '}
+                  {mayLeaveOut ? (
+                    <button
+                      type="button"
+                      className="text-note underline decoration-violet underline-offset-[3px] hover:text-ink print:hidden"
+                      aria-label={`${run.exclusion ? 'Take in again' : 'Leave out'}: ${run.runName}`}
+                      onClick={() => setAsked(run)}
+                    >
+                      {run.exclusion ? 'take in again' : 'leave out'}
+                    </button>
+                  ) : null}
+                </Cell>
+              )}
             </Row>
           ))}
         </tbody>

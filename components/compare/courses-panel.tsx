@@ -5,6 +5,7 @@ import { Answer } from '@/components/data/answer';
 import type { SelectionState } from '@/components/selection/use-selection';
 import { SelectField } from '@/components/ui/choice';
 import { EmptyState } from '@/components/ui/page-states';
+import { Unit } from '@/components/ui/quantity';
 import { Lede, Section } from '@/components/ui/sheet';
 import { Cell, CellNote, HeadCell, Row, Table } from '@/components/ui/table';
 import { namedSeries } from '@/lib/charts/named-series';
@@ -46,7 +47,8 @@ function Courses({ found, selection }: { found: CoursesView; selection: Selectio
     <>
       <Lede>
         {countOf(runs.length, 'run')} followed over time;{' '}
-        {changing === 0 ? 'none changes' : countOf(changing, 'changes', 'change')} beyond its errors.
+        {changing === 0 ? 'none changes' : countOf(changing, 'changes', 'change')} by more than errors
+        explain.
       </Lede>
       <div className="pb-2 pt-1 print:hidden">
         <SelectField
@@ -74,7 +76,9 @@ function Courses({ found, selection }: { found: CoursesView; selection: Selectio
         fileName="courses-over-time"
       />
       {one ? (
-        <p className="max-w-[84ch] pt-2">{one.overTime.verdict ?? one.overTime.note}</p>
+        <p className="max-w-[84ch] pt-2">
+          <Unit>{one.overTime.verdict ?? one.overTime.note}</Unit>
+        </p>
       ) : comparable.length > LINES_MOST ? (
         <p className="text-note text-ink-2">
           Only the first {LINES_MOST} runs are drawn: more can’t be told apart. The table has all.

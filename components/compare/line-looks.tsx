@@ -1,3 +1,5 @@
+import { Unit } from '@/components/ui/quantity';
+
 /** How curves of several runs or selections are told apart: by dash and colour together. */
 export interface LineLook {
   stroke: string;
@@ -27,7 +29,9 @@ export function LineLegend({ items }: { items: readonly { key: string; look: Lin
           <svg viewBox="0 0 30 8" aria-hidden="true" className="h-2 w-[30px]">
             <path d="M0 4H30" stroke={look.stroke} strokeWidth={look.widthPx} strokeDasharray={look.dash} />
           </svg>
-          {name}
+          <span>
+            <Unit>{name}</Unit>
+          </span>
         </li>
       ))}
     </ul>

@@ -171,7 +171,7 @@ export function PooledChart({ curves, scale, log }: PooledChartProps) {
           {drawn.map(({ points, look }, i) => (
             <BandMark
               key={`between ${i}`}
-              rows={points.flatMap(({ x, y, between }) => y === null || !between ? [] : [{ x, low: Math.max(y - between, ranges.y.log ? ranges.y.min : 0), high: y + between }])} // prettier-ignore
+              rows={points.flatMap(({ x, y, between }) => y === null || between === null ? [] : [{ x, low: Math.max(y - between, ranges.y.log ? ranges.y.min : 0), high: y + between }])} // prettier-ignore
               fill={look.stroke}
               opacity={0.12}
             />

@@ -102,7 +102,7 @@ export const RUN_COLUMNS: readonly RunColumn[] = [
         <>
           <Quantity {...(events.perVolumeTime_m3_s ?? { value: null })} siPerUnit={1e9} />
           <CellNote>
-            {events.confirmed} of {events.judged} judged
+            {events.candidates === 0 ? 'no candidates' : `${events.confirmed} of ${events.judged} judged`}
             {events.judged < events.candidates ? `, ${events.candidates - events.judged} open` : ''}
           </CellNote>
         </>

@@ -36,12 +36,15 @@ export function OverviewSentence({
   overview,
   seesData,
   review,
+  signs,
 }: {
   name: string;
   overview: OverviewView;
   seesData: boolean;
   /** What waits on the review desk for this person. */
   review: { waiting: number; disagreed: number };
+  /** Whether this person signs analyses off. */
+  signs: boolean;
 }) {
   const { counts, arriving, results } = overview;
   const waits: ReactNode[] = [];
@@ -82,6 +85,24 @@ export function OverviewSentence({
       <>
         <Link href="/review#disagreements">{words}</Link> of readers{' '}
         {review.disagreed === 1 ? 'waits' : 'wait'} for your word
+      </>,
+    );
+  }
+  if (counts.packages > 0) {
+    waits.push(
+      <>
+        <Link href="/exports">{plural(counts.packages, 'data package', 'data packages')}</Link> of yours{' '}
+        {counts.packages === 1 ? 'is' : 'are'} ready
+      </>,
+    );
+  }
+  if (signs && counts.unsigned > 0) {
+    waits.push(
+      <>
+        <Link href="/compare?signedOff=no">
+          {plural(counts.unsigned, 'finished analysis', 'finished analyses')}
+        </Link>{' '}
+        {counts.unsigned === 1 ? 'is' : 'are'} not signed off
       </>,
     );
   }

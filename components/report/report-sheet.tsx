@@ -46,7 +46,7 @@ export function ReportSheet(props: ReportSheetProps) {
   const analysed = runs.filter(({ analysisId }) => analysisId !== null);
   const signed = runs.filter(({ signedOff }) => signedOff !== null);
   const methods = RUN_COLUMNS.filter(({ key, cell }) => key.startsWith('density-') && key !== 'density-combined' && runs.some((run) => run.lineDensities_m2.some(({ method }) => `density-${method}` === key) && cell(run))); // prettier-ignore
-  const columns = [...RESULT_COLUMNS, ...methods.map(({ key }) => key)];
+  const marks = fits.map(({ campaignId }) => campaignId);
   return (
     <Sheet>
       <PageTitle
@@ -75,13 +75,18 @@ export function ReportSheet(props: ReportSheetProps) {
         <>
           <ReportFigures comparison={comparison} campaignId={campaign.id} />
           <Section title="Results" count="intervals of 95 %">
-            <CompareTable
-              runs={runs}
-              campaigns={fits.map(({ campaignId }) => campaignId)}
-              columns={columns}
-              mayLeaveOut={false}
-            />{' '}
-            {/* prettier-ignore */}
+            <CompareTable runs={runs} campaigns={marks} columns={RESULT_COLUMNS} mayLeaveOut={false} bare />
+            {methods.length > 0 ? (
+              <div className="pt-4">
+                <CompareTable
+                  runs={runs}
+                  campaigns={marks}
+                  columns={methods.map(({ key }) => key)}
+                  mayLeaveOut={false}
+                  bare
+                />
+              </div>
+            ) : null}
             {fits.map((fit) =>
               fit.gamma_s_m2 && fit.v0_m_s ? (
                 <p key={fit.campaignId} className="pt-2">

@@ -3,6 +3,8 @@
 import { Checkbox, SelectField } from '@/components/ui/choice';
 import { Field } from '@/components/ui/field';
 import { Fold } from '@/components/ui/fold';
+import { FormulaText } from '@/components/ui/formula-text';
+import { Unit } from '@/components/ui/quantity';
 import { DRIVE_WORDS, RANGE_FIELDS, selectionWords, shownBound, typedBound } from '@/lib/compare/selection-words'; // prettier-ignore
 import { countOf } from '@/lib/format/count';
 import { DRIVES } from '@/lib/schemas/selection';
@@ -40,7 +42,11 @@ export function SelectionBar({ selection, campaigns, tags, viewer }: SelectionBa
     <div className="flex flex-wrap items-start justify-between gap-x-4 pb-2 print:hidden">
       <Fold
         className="min-w-0 flex-1"
-        title={<span className="text-ink">Selection: {selectionWords(filters)}</span>}
+        title={
+          <span className="text-ink">
+            Selection: <Words>{selectionWords(filters)}</Words>
+          </span>
+        }
       >
         <div className="grid gap-x-6 gap-y-3 pb-3 pt-2 hand:grid-cols-[minmax(180px,260px)_minmax(0,1fr)]">
           <fieldset className="min-w-0">
@@ -99,6 +105,11 @@ export function SelectionBar({ selection, campaigns, tags, viewer }: SelectionBa
   );
 }
 
+/** Words with their subscripts and powers set in type. */
+function Words({ children }: { children: string }) {
+  return children.includes('_') ? <FormulaText>{children}</FormulaText> : <Unit>{children}</Unit>;
+}
+
 /** One end of a range; it counts when the field is left or Enter is pressed. */
 function Bound({
   selection: { filters, set },
@@ -118,7 +129,7 @@ function Bound({
   return (
     <Field
       key={shown}
-      label={`${range.label} ${end}`}
+      label={<Words>{`${range.label} ${end}`}</Words>}
       unit={range.unit}
       inputMode="decimal"
       className="w-[124px]"

@@ -20,7 +20,7 @@ export function ScrollBox({ label, children }: { label: string; children: ReactN
   return (
     <div
       ref={box}
-      className="max-w-full overflow-x-auto print:overflow-visible"
+      className="relative max-w-full overflow-x-auto print:overflow-visible"
       {...(scrolls ? { role: 'region', 'aria-label': `${label}, scrolls sideways`, tabIndex: 0 } : {})}
     >
       {children}

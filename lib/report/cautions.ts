@@ -32,5 +32,15 @@ export function reportCautions(
       told.push({ about: runName, words: combined.note });
   }
   for (const { name, warnings } of planned) for (const words of warnings) told.push({ about: name, words });
-  return told;
+  return together(told);
+}
+
+/** What is said of several runs alike is said once, with all their names. */
+function together(told: readonly Told[]): Told[] {
+  const byWords = new Map<string, string[]>();
+  for (const { about, words } of told) {
+    const names = byWords.get(words) ?? [];
+    if (!names.includes(about)) byWords.set(words, [...names, about]);
+  }
+  return [...byWords].map(([words, names]) => ({ about: names.join(', '), words }));
 }

@@ -38,6 +38,10 @@ export interface OverviewView {
     running: number;
     waiting: number;
     failed: number;
+    /** Finished and not signed off. */
+    unsigned: number;
+    /** Data packages of this person that were built in the last week and can be downloaded. */
+    packages: number;
     refused: number;
     /** Rehearsals, which count nowhere else here. */
     rehearsals: number;

@@ -4,6 +4,7 @@ import type { Estimate } from '@/tracking/estimates/estimate';
 import { receivedByRecording } from './received-bytes';
 import { TAKEN } from './rehearsal-mark';
 import { selectRow, selectRows } from './select';
+import { signedOffSql } from './signed-off';
 
 /** Rows of each part of the overview; the rest is a click away. */
 const ROWS = 6;
@@ -16,6 +17,8 @@ interface Counts {
   refused: number;
   rehearsals: number;
   members: number;
+  unsigned: number;
+  packages: number;
 }
 
 /** What waits in a laboratory and what is new, for the first page. */
@@ -29,10 +32,13 @@ export async function labOverview(labId: string, userId: string): Promise<Overvi
        (SELECT count(*)::int FROM rehearsals WHERE lab_id = $1 AND deleted_at IS NULL) AS rehearsals,
        count(*) FILTER (WHERE a.state = 'running')::int AS running,
        count(*) FILTER (WHERE a.state = 'waiting')::int AS waiting,
-       count(*) FILTER (WHERE a.state = 'failed')::int AS failed
+       count(*) FILTER (WHERE a.state = 'failed')::int AS failed,
+       count(*) FILTER (WHERE a.state = 'done' AND NOT (${signedOffSql}))::int AS unsigned,
+       (SELECT count(*)::int FROM exports e WHERE e.lab_id = $1 AND e.created_by = $2 AND e.state = 'done'
+          AND e.finished_at > now() - interval '7 days') AS packages
      FROM analyses a JOIN recordings g ON g.id = a.recording_id AND g.deleted_at IS NULL
      WHERE a.lab_id = $1 AND ${TAKEN}`,
-    [labId],
+    [labId, userId],
   );
   const [arriving, results] = await Promise.all([arrivingStacks(labId, userId), newResults(labId)]);
   return { counts: counts!, arriving, results };

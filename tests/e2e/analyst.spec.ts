@@ -93,7 +93,7 @@ describe('an analyst', () => {
       ['profiles', /across the channel of/],
     ] as const) {
       // prettier-ignore
-      await page.getByRole('radio', { name: choice, exact: true }).check();
+      await page.getByRole('radio', { name: choice, exact: true }).click();
       await page.getByRole('img', { name: sentence }).waitFor();
       await expectNoSidewaysScroll(page);
     }
@@ -103,7 +103,7 @@ describe('an analyst', () => {
     'takes the selection to the exports and downloads a package',
     async () => {
       const { page } = visit;
-      await page.getByRole('radio', { name: 'runs', exact: true }).check();
+      await page.getByRole('radio', { name: 'runs', exact: true }).click();
       await page.getByRole('link', { name: 'Put these into a data package' }).click();
       await page.waitForURL(/\/exports\?.*temperatureFrom_K/);
       const zip = await buildPackage(page, 'Package of the analyst');
