@@ -28,6 +28,9 @@ export async function startProduct(
   const child = spawn(process.execPath, [join(rootDir(), 'scripts', 'start.mjs')], {
     env: {
       ...process.env,
+      // Its own cluster, not that of a product that this process had before.
+      DATABASE_URL: undefined,
+      DATABASE_OWNER_URL: undefined,
       ...settings,
       PORT: String(port),
       BEADLINE_DATA: dataDir,
