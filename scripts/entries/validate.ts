@@ -20,6 +20,7 @@ import {
   studyPopulations,
 } from '@/tracking/studies/populations';
 import { PRECISION_LEAST, RECALL_LEAST, studyReconnections } from '@/tracking/studies/reconnections';
+import { keepsTailExponent, studyTailExponents } from '@/tracking/studies/tail-exponents';
 import { keepsPromises, studyStandardRecording } from '@/tracking/studies/standard-recording';
 import { steadyTangleCoverage } from '@/tracking/studies/steady-tangle';
 
@@ -140,6 +141,17 @@ const STUDIES: Record<string, Study> = {
     };
     const named = namedTrapped(POPULATION_SEEDS);
     yield { decays: POPULATION_SEEDS.length, named, kept: named >= 0.9 * POPULATION_SEEDS.length };
+  },
+  /** Exponents of power-law tails above a Gaussian body, noise at a seventh of where they begin and less. */
+  *'tail-exponents'() {
+    for (const exponent of [3, 4]) {
+      for (const fromOverNoise of [7, 20]) {
+        const one = { exponent, fromPx: 0.5, tailShare: 0.4, fromOverNoise };
+        const figures = studyTailExponents(one, POPULATION_SEEDS);
+        // The promise is stated for 3.
+        yield exponent === 3 ? { ...figures, kept: keepsTailExponent(figures) } : { ...figures };
+      }
+    }
   },
   /** How often the intervals of gamma and v_0 hold the truth, of every hundred campaigns. */
   *'steady-tangle'() {

@@ -15,6 +15,11 @@ const AROUND_TO = 2.5;
 /** Below so many standard errors of it a surplus of pairs may be chance. */
 const SURPLUS_LEAST = 3;
 const ROUNDS_MAX = 20;
+/**
+ * Results scatter by so much more than blocks tell (simulated tangles of curved lines, ten seeds): lines run
+ * through several blocks, and only a surplus that stands out by chance as well is taken.
+ */
+const BLOCKS_MISS = 1.9;
 
 /**
  * A tracer has lambda G fellows on its own line between two projected distances, where G is known for
@@ -95,8 +100,8 @@ function fellowsWithin(
     lowM: near.from,
     highM: near.to,
     fellowLengthM: length(near),
-    densityError: widenForFewLines(spread(n.map((of, b) => 2 * of - f[b])), n),
-    perLengthError: widenForFewLines(spread(n.map((of, b) => f[b] - of)), n),
+    densityError: BLOCKS_MISS * widenForFewLines(spread(n.map((of, b) => 2 * of - f[b])), n),
+    perLengthError: BLOCKS_MISS * widenForFewLines(spread(n.map((of, b) => f[b] - of)), n),
   };
 }
 

@@ -89,6 +89,25 @@ function trimmedVelocities(context: EstimateContext, lagFrames: number): Trimmed
   const n = values.length;
   if (n < 2 || !Number.isFinite(noise)) return null;
   noise /= n;
+  const { mean, variance, limit, kept } = trimmed(values);
+  const influence = new Float64Array(tracks.count);
+  values.forEach((v, i) => {
+    if (Math.abs(v - mean) > limit) return;
+    influence[trackOf[i]] += (v - mean) ** 2 - TRIMMED_VARIANCE * variance;
+  });
+  const scale = TRIMMING_GAIN / (TRIMMED_VARIANCE * kept);
+  for (let i = 0; i < influence.length; i++) influence[i] *= scale;
+  return { lagFrames, velocities: n, meanMS: mean, limitMS: limit, variance, noise, influence };
+}
+
+/** Mean and variance of values of which those beyond 2.5 widths are left out, as of a Gaussian that was not trimmed. */
+export function trimmed(values: readonly number[]): {
+  mean: number;
+  variance: number;
+  limit: number;
+  kept: number;
+} {
+  const n = values.length;
   let mean = values.reduce((a, b) => a + b, 0) / n;
   let variance = values.reduce((sum, v) => sum + (v - mean) ** 2, 0) / n;
   let limit = Infinity;
@@ -111,12 +130,5 @@ function trimmedVelocities(context: EstimateContext, lagFrames: number): Trimmed
     variance = next;
     if (settled) break;
   }
-  const influence = new Float64Array(tracks.count);
-  values.forEach((v, i) => {
-    if (Math.abs(v - mean) > limit) return;
-    influence[trackOf[i]] += (v - mean) ** 2 - TRIMMED_VARIANCE * variance;
-  });
-  const scale = TRIMMING_GAIN / (TRIMMED_VARIANCE * kept);
-  for (let i = 0; i < influence.length; i++) influence[i] *= scale;
-  return { lagFrames, velocities: n, meanMS: mean, limitMS: limit, variance, noise, influence };
+  return { mean, variance, limit, kept };
 }

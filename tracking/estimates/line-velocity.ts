@@ -1,4 +1,5 @@
 import type { EstimateContext } from './context';
+import { blockError } from './image-blocks';
 import { notUsable, type DensityResult } from './interval';
 import { transverseMotion } from './line-motion';
 import {
@@ -44,8 +45,11 @@ export function lineVelocityEstimate(context: EstimateContext): DensityResult {
   }
   const valueM2 = densityFromTransverse(variance0);
   const byVariance = powerOfVariance(variance0);
-  const { groups } = context;
-  const error = sumError(byLine(best.influence0, groups), perhapsOneLine(groups));
+  const { groups, tracks, image } = context;
+  const error = Math.max(
+    sumError(byLine(best.influence0, groups), perhapsOneLine(groups)),
+    blockError(best.influence0, tracks, image),
+  );
   const statistical = (byVariance * error) / variance0;
   const withoutLag = WITHOUT_LAG_ERROR * byVariance * Math.abs(Math.log(best.withoutLag));
   return {

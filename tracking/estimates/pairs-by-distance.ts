@@ -1,4 +1,5 @@
 import type { Tracks } from '../types';
+import { BLOCKS, blockOf } from './image-blocks';
 import { nearPoints } from './near-points';
 import type { TrappedPool } from './trapped-pool';
 
@@ -6,8 +7,6 @@ import type { TrappedPool } from './trapped-pool';
 const FRAMES_MAX = 40;
 /** Bins of distance up to the reach. */
 const BINS = 240;
-/** Blocks of the image along each side: places further apart than one hardly know of each other. */
-const BLOCKS_A_SIDE = 6;
 
 /** Trapped tracers and pairs of them per frame, by block of the image and by projected distance. */
 export interface PairsByDistance {
@@ -32,13 +31,11 @@ export function pairsByDistance(
   reachPx: number,
   pixelSizeM: number,
 ): PairsByDistance {
-  const blocks = BLOCKS_A_SIDE * BLOCKS_A_SIDE;
+  const blocks = BLOCKS;
   const tracers = new Float64Array(blocks);
   const pairs = new Float64Array(blocks * BINS);
   const chosen: number[] = [];
   for (let i = 0; i < tracks.count; i++) if (pool.chosen[i] === 1) chosen.push(i);
-  const part = (at: number, size: number) =>
-    Math.min(BLOCKS_A_SIDE - 1, Math.max(0, Math.floor(((at + 0.5) / size) * BLOCKS_A_SIDE)));
   const step = Math.max(1, Math.floor(image.frames / FRAMES_MAX));
   let frames = 0;
   for (let frame = Math.floor(step / 2); frame < image.frames; frame += step) {
@@ -51,7 +48,7 @@ export function pairsByDistance(
       x.push(tracks.xPx[at]);
       y.push(tracks.yPx[at]);
     }
-    const block = x.map((_, i) => part(y[i], image.height) * BLOCKS_A_SIDE + part(x[i], image.width));
+    const block = x.map((_, i) => blockOf(x[i], y[i], image));
     for (const of of block) tracers[of]++;
     for (const { i, j } of nearPoints(x, y, reachPx)) {
       const dx = Math.abs(x[i] - x[j]);

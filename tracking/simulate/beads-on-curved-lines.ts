@@ -10,6 +10,8 @@ import type { SceneBuilder } from './scene-builder';
 import { curvedBox } from './tangle-boxes';
 import type { FilledTangleOptions } from './tangle-options';
 
+/** Time that lines move before they are filmed, s: waves that were put together at random have parted by then. */
+export const SETTLING_S = 0.3;
 /** Waves before a line repeats itself, at least. */
 const WAVES_LEAST = 4;
 
@@ -39,11 +41,12 @@ export function addBeadsOnCurvedLines(
     const random = createRandom(mixSeed(seed, index + 1));
     const start = axis.point.map((p, a) => p + axis.from * axis.direction[a]) as [number, number, number];
     const lengthM = Math.max(axis.to - axis.from, WAVES_LEAST * waves.waveM);
-    let line: Filament = wavyLine(random, start, axis.direction, lengthM, waves);
-    const wholeM = filamentRuler(line).lengthM;
+    const made = wavyLine(random, start, axis.direction, lengthM, waves);
+    const wholeM = filamentRuler(made).lengthM;
     // Only what stands on the piece of the axis within the box belongs to the process.
     const beads = random.poisson((o.beadsPerMetre * wholeM * (axis.to - axis.from)) / lengthM);
     if (beads === 0) return;
+    let line: Filament = advanceFilament(made, { betaM2S }, SETTLING_S);
     const share = Float64Array.from(
       { length: beads },
       () => (random.uniform() * (axis.to - axis.from)) / lengthM,

@@ -1,5 +1,5 @@
 import type { Random } from '../random';
-import { KAPPA_M2_S } from '../units';
+import { separationAfter } from '../pairs/square-root-law';
 
 /** A burst dies out after this long, s. */
 const BURST_S = 0.1;
@@ -25,7 +25,7 @@ export function burstPath(
     const angle = 2 * Math.PI * random.uniform();
     for (let k = 0; k < frames; k++) {
       const since = k * intervalS - t0;
-      const reach = 0.5 * amplitude * Math.sqrt(KAPPA_M2_S * Math.min(Math.abs(since), BURST_S));
+      const reach = 0.5 * separationAfter(amplitude, Math.min(Math.abs(since), BURST_S));
       const shift = Math.sign(since) * reach;
       x[k] += shift * Math.cos(angle);
       y[k] += shift * Math.sin(angle);

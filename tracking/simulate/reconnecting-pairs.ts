@@ -1,5 +1,5 @@
 import { createRandom, mixSeed } from '../random';
-import { KAPPA_M2_S } from '../units';
+import { separationAfter } from '../pairs/square-root-law';
 import { tracerBrightness } from './blink';
 import { KIND_TRAPPED, type SceneEvent } from './scene';
 import type { SceneBuilder } from './scene-builder';
@@ -43,7 +43,7 @@ export function addReconnectingPairs(
         const since = (k - t0Frames) * dt;
         const amplitude = since < 0 ? amplitudeBefore : amplitudeAfter;
         const angle = since < 0 ? before : after;
-        const reach = 0.5 * amplitude * Math.sqrt(KAPPA_M2_S * Math.abs(since));
+        const reach = 0.5 * separationAfter(amplitude, since);
         const drift = o.tangleVelocityMPerS * since;
         // The offset lies across the separation, so that delta^2 = offset^2 + A^2 kappa |t - t0|.
         const dx = reach * Math.cos(angle) - 0.5 * offsetM * Math.sin(angle);

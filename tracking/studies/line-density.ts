@@ -6,6 +6,7 @@ import { Z95 } from '../normal-tail';
 import { findPopulations } from '../populations/populations';
 import { piecesOf } from '../populations/pieces';
 import { RECIPE_DEFAULTS } from '../recipe';
+import { SETTLING_S } from '../simulate/beads-on-curved-lines';
 import { wavyVelocityFactor } from '../simulate/local-induction/wavy-velocity';
 import { tangleScene } from '../simulate/tangle-scene';
 import { trueTracks } from '../simulate/true-tracks';
@@ -101,7 +102,7 @@ export function lineDensityTrials(
   const volumeM3 = (sizePx * PIXEL_M) ** 2 * filled.sheetThicknessM;
   const freeTracersPerFrame = Math.round((lineDensityM2 * filled.beadsPerMetre * volumeM3) / 3);
   const factor = filled.curved
-    ? wavyVelocityFactor(filled.curved, 1 / Math.sqrt(lineDensityM2))
+    ? wavyVelocityFactor(filled.curved, 1 / Math.sqrt(lineDensityM2), SETTLING_S + 0.5 * FRAMES * INTERVAL_S)
     : LINE_VELOCITY_FACTOR;
   return seeds.flatMap((seed) => {
     const scene = tangleScene({

@@ -37,6 +37,12 @@ interface Movers {
   owner: Int32Array;
 }
 
+/** Chance that another spot is nearer to a prediction than the right one: p = c / (1 + c), c = 2 pi n s^2 (Poisson field of density n, error s per axis). */
+export function nearestWrongShare(spotsPerPx2: number, variancePx2: number): number {
+  const crowd = 2 * Math.PI * spotsPerPx2 * variancePx2;
+  return crowd / (1 + crowd);
+}
+
 /**
  * Uniform movers of equal brightness, places and velocities by chance, each position scattered by
  * a known amount: linked and compared with the truth, row by row more difficult.
@@ -60,13 +66,12 @@ export function studyLinkingDifficulty(options: DifficultyOptions): DifficultyRo
     const mean = (of: (variance: number) => number) =>
       errors.reduce((sum, variance) => sum + of(variance), 0) / errors.length;
     const predictionErrorPx = Math.sqrt(mean((variance) => variance));
-    const crowd = (variance: number) => 2 * Math.PI * tracersPerPx2 * variance;
     const scores = scoreTracks(trueTracks(movers), withoutBridges(tracks), frames);
     return {
       difficulty: (Math.SQRT2 * predictionErrorPx) / spacing,
       predictionErrorPx,
       ...wrongLinks(tracks, movers),
-      nearestChoiceShare: mean((variance) => crowd(variance) / (1 + crowd(variance))),
+      nearestChoiceShare: mean((variance) => nearestWrongShare(tracersPerPx2, variance)),
       alpha: scores.alpha,
       jaccard: scores.jaccard,
     };

@@ -1,3 +1,4 @@
+import { chiSquareTail } from '../estimates/random-effects';
 import { chooseGroups } from '../populations/choose-groups';
 import { standardise, type FeatureTable } from '../populations/feature-table';
 import { findPopulations } from '../populations/populations';
@@ -22,6 +23,8 @@ export interface PopulationCase {
 const MEASURED_SD = 0.2;
 const TRAPPED_FROM = 0.9;
 const BINS = 10;
+/** Where nearly all are expected to be of one kind a count is no Gaussian. */
+const VARIANCE_LEAST = 1;
 
 interface Drawn {
   table: FeatureTable;
@@ -68,12 +71,14 @@ export interface PopulationFigures extends PopulationCase {
   bestUndecided: number;
   /** Per tenth of the stated probability: its mean, the share that is trapped with Wilson's interval, tracks. */
   reliability: { stated: number; share: number; low: number; high: number; tracks: number }[];
+  /** Chance of a curve as far off as this one if probabilities are what they say. */
+  reliabilityChance: number;
 }
 
 /** How well tracks drawn from known densities are told apart, beside the rule that knows the densities. */
 export function studyPopulations(one: PopulationCase, seeds: readonly number[]): PopulationFigures {
   const [mine, best] = [new Tally(), new Tally()];
-  const bins = Array.from({ length: BINS }, () => ({ tracks: 0, trapped: 0, stated: 0 }));
+  const bins = Array.from({ length: BINS }, () => ({ tracks: 0, trapped: 0, stated: 0, variance: 0 }));
   let split = 0;
   for (const seed of seeds) {
     const { table, trapped, known } = draw(one, createRandom(mixSeed(seed, 71)));
@@ -90,6 +95,7 @@ export function studyPopulations(one: PopulationCase, seeds: readonly number[]):
       bin.tracks++;
       bin.trapped += trapped[i];
       bin.stated += p;
+      bin.variance += p * (1 - p);
     }
   }
   return {
@@ -108,7 +114,18 @@ export function studyPopulations(one: PopulationCase, seeds: readonly number[]):
         ...wilsonInterval(trapped, tracks),
         tracks,
       })),
+    reliabilityChance: curveChance(bins),
   };
+}
+
+/**
+ * Whether shares lie in their joint 95 % band about what was stated: chi-square of the tenths that hold
+ * enough of both kinds to be Gaussian (Hosmer & Lemeshow 1980, probabilities not fitted to these answers).
+ */
+function curveChance(bins: readonly { trapped: number; stated: number; variance: number }[]): number {
+  const told = bins.filter(({ variance }) => variance >= VARIANCE_LEAST);
+  const chi2 = told.reduce((sum, b) => sum + (b.trapped - b.stated) ** 2 / b.variance, 0);
+  return told.length > 0 ? chiSquareTail(chi2, told.length) : 1;
 }
 
 /** Right and wrong names of both kinds. */
@@ -135,9 +152,10 @@ class Tally {
   }
 }
 
-/** At most 0.02 below the rule that knows the densities, at most 10 % undecided. */
+/** At most 0.02 below the rule that knows the densities, at most 10 % undecided, probabilities that are what they say. */
 export const keepsPopulations = (figures: PopulationFigures): boolean =>
   figures.split === figures.trials &&
+  (figures.separation < 4 || figures.reliabilityChance >= 0.05) &&
   figures.balancedAccuracy >= figures.bestAccuracy - 0.02 &&
   (figures.separation < 4 || figures.balancedAccuracy >= 0.95) &&
   figures.undecided <= Math.max(0.1, figures.bestUndecided + 0.02);

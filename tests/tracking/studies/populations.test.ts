@@ -10,6 +10,8 @@ test('two populations of known densities are told apart nearly as well as by the
   // 0.9995 beside 1 in trials with 1600 tracks; 0.02 below is what is promised.
   expect(figures.balancedAccuracy).toBeGreaterThan(figures.bestAccuracy - 0.02);
   expect(figures.undecided).toBeLessThan(0.1);
+  // Shares of tenths lie about what is stated as chance lets them: turned down once in 1,000 studies.
+  expect(figures.reliabilityChance).toBeGreaterThan(1e-3);
   // Extreme probabilities are what they say: of those near 1, at most 3 in 100 are free.
   const top = figures.reliability.at(-1)!;
   expect(top.stated).toBeGreaterThan(0.98);

@@ -1,6 +1,7 @@
 import { describe, expect, test } from 'vitest';
 import { lnNormalTail, normalHazard } from '@/tracking/normal-tail';
 import { createRandom } from '@/tracking/random';
+import { studyTailExponents } from '@/tracking/studies/tail-exponents';
 import { compareDensities } from '@/tracking/tails/likelihood-ratio';
 import { fitPowerLawTail } from '@/tracking/tails/power-law-tail';
 import { fitGaussianTail, fitLogNormalTail, powerLawDensity } from '@/tracking/tails/tail-alternatives';
@@ -167,6 +168,18 @@ describe('tails of velocities', () => {
     expectWithin(speed?.exponent ?? 0, 3, { abs: 0.2 });
     expect(speed?.verdict).toBe('power law');
   });
+
+  test.each([1, 2])(
+    'above a Gaussian body and noise of a seventh of where the tail begins it is 3 within 0.2 (seed %d)',
+    (seed) => {
+      const figures = studyTailExponents({ exponent: 3, fromPx: 0.5, tailShare: 0.4, fromOverNoise: 7 }, [
+        seed,
+      ]);
+      expect(figures.tailSamples).toBeGreaterThanOrEqual(2000);
+      expect(figures.worstOff).toBeLessThan(0.2);
+      expect(figures.namedPowerLaw).toBe(1);
+    },
+  );
 
   test.each([22, 24, 25])('Gaussian steps are never called a power law (seed %d)', (seed) => {
     const random = createRandom(seed);
