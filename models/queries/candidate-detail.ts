@@ -1,11 +1,12 @@
 import { notFound } from '@/lib/errors';
 import { filmOf, type Film } from '@/lib/review/film';
 import type { CandidateDetailView, FilmPathView } from '@/lib/views/review-view';
-import { POINT_BRIDGED } from '@/tracking/types';
+import { isMeasured, type EditedTrack } from '@/tracking/corrections/edited-track';
 import { outcomeJoins, type Sight } from './candidate-sight';
+import { readEditedTracks } from './edited-tracks';
 import { CANDIDATE_COLUMNS, candidateView, type CandidateRow } from './list-candidates';
-import { selectRow } from './select';
-import { POPULATION_UNKNOWN, trackWindow, type TrackWindow } from './track-window';
+import { selectRow, selectRows } from './select';
+import { currentTracksRevision, validRows } from './tracks-revision';
 import { ownVerdict } from './verdicts';
 
 interface Row extends CandidateRow {
@@ -44,8 +45,7 @@ export async function candidateOnFilm(
   const meetingFrame = facts.t0S / row.frame_interval_s;
   const from = Math.max(0, Math.round(meetingFrame) - REACH_FRAMES);
   const to = Math.min(frames - 1, Math.round(meetingFrame) + REACH_FRAMES);
-  const window = await trackWindow(labId, row.analysis_id, from, Math.max(from, to));
-  const paths = [facts.trackA, facts.trackB].map((track) => pathOf(window, track));
+  const paths = await pathsOf(labId, row.analysis_id, [facts.trackA, facts.trackB], from, to);
   const image = { frames, width: row.width ?? 1, height: row.height ?? 1 };
   const film = filmOf({ meetingFrame, xPx: facts.xPx, yPx: facts.yPx, paths, image });
   return { row, film, paths };
@@ -69,16 +69,44 @@ export async function candidateDetail(
 
 const hundredths = (px: number) => Math.round(px * 100) / 100;
 
-function pathOf(window: TrackWindow | null, track: number): FilmPathView {
-  const at = window ? window.track.indexOf(track) : -1;
-  const path: FilmPathView = { track, population: null, frame: [], x: [], y: [], bridged: [] };
-  if (!window || at < 0) return path;
-  path.population = window.population[at] === POPULATION_UNKNOWN ? null : window.population[at];
-  for (let i = window.start[at]; i < window.start[at + 1]; i++) {
-    path.frame.push(window.frame[i]);
-    path.x.push(hundredths(window.xPx[i]));
-    path.y.push(hundredths(window.yPx[i]));
-    path.bridged.push((window.flags[i] & POINT_BRIDGED) !== 0);
+/** The two tracks alone: readers go from one candidate to the next as quickly as they judge. */
+async function pathsOf(
+  labId: string,
+  analysisId: string,
+  numbers: readonly number[],
+  from: number,
+  to: number,
+): Promise<FilmPathView[]> {
+  const revision = (await currentTracksRevision(labId, analysisId)) ?? 0;
+  const tracks = await readEditedTracks(analysisId, revision, numbers);
+  const rows = await selectRows<{ number: number; population: number | null }>(
+    `SELECT t.number, t.population FROM tracks t
+     WHERE t.analysis_id = $1 AND t.number = ANY($3::int[]) AND ${validRows('t')}`,
+    [analysisId, revision, [...numbers]],
+  );
+  const populations = new Map(rows.map(({ number, population }) => [number, population]));
+  return numbers.map((number) =>
+    pathOf(number, tracks.get(number) ?? null, populations.get(number) ?? null, from, to),
+  );
+}
+
+function pathOf(
+  number: number,
+  track: EditedTrack | null,
+  population: number | null,
+  from: number,
+  to: number,
+): FilmPathView {
+  const path: FilmPathView = { track: number, population: null, frame: [], x: [], y: [], bridged: [] };
+  if (!track) return path;
+  for (let i = 0; i < track.frame.length; i++) {
+    const frame = track.frame[i];
+    if (frame < from || frame > to) continue;
+    path.population = population;
+    path.frame.push(frame);
+    path.x.push(hundredths(track.xPx[i]));
+    path.y.push(hundredths(track.yPx[i]));
+    path.bridged.push(!isMeasured(track, i));
   }
   return path;
 }
