@@ -1,4 +1,4 @@
-import { assembleTracks } from './linking/assemble-tracks';
+import { assembleTracks, wholeTracks, type AssembledTracks } from './linking/assemble-tracks';
 import { BRIGHTNESS_UNTOLD, measureBrightness } from './linking/brightness-statistics';
 import type { LinkLimits } from './linking/link-limits';
 import { linkPass } from './linking/link-pass';
@@ -6,6 +6,7 @@ import { linkInWindows } from './linking/link-windows';
 import { firstStatistics, measureStatistics } from './linking/motion-statistics';
 import { createSpotTable } from './linking/spot-table';
 import { statisticsSample } from './linking/statistics-sample';
+import { frameOfSpot, heldSpots, type SpotSource } from './spot-source';
 import type { Recipe, Spots, Tracks } from './types';
 
 /** What linking needs of a recipe. */
@@ -38,39 +39,37 @@ export interface RecordingSize {
  * @throws RangeError when spots are out of order or outside the recording's frames.
  */
 export function linkSpots(spots: Spots, size: RecordingSize, recipe: LinkRecipe): Tracks {
-  checkOrder(spots, size.frames);
+  return wholeTracks(linkSource(heldSpots(spots, size.frames), size, recipe));
+}
+
+/**
+ * The same for spots and tracks that are not held as a whole: a window of spots at a time is asked for, and tracks
+ * are given out piece by piece. What is held for the whole recording are two numbers per spot, its links.
+ */
+export function linkSource(source: SpotSource, size: RecordingSize, recipe: LinkRecipe): AssembledTracks {
   if (!(recipe.longestStepPx > 0)) {
     throw new RangeError(`longestStepPx must be > 0. Received ${recipe.longestStepPx}.`);
   }
+  const { count } = source;
   const limits: LinkLimits = {
     width: size.width,
     height: size.height,
     // A try-out has spots of a few frames only, and densities are per frame looked at.
-    frames: spots.count > 0 ? spots.frame[spots.count - 1] - spots.frame[0] + 1 : 1,
+    frames: count > 0 ? frameOfSpot(source, count - 1) - frameOfSpot(source, 0) + 1 : 1,
     longestStepPx: recipe.longestStepPx,
     mayVanishFrames: recipe.mayVanishFrames,
   };
   const quick = recipe.effort === 'quick';
-  const sample = statisticsSample(spots);
+  const known = { ...learn(statisticsSample(source), limits, quick), quick };
+  const spotSizePx = recipe.spotSizePx ?? SPOT_SIZE_PX;
+  const links = linkInWindows(source, limits, { ...known, spotSizePx });
+  return assembleTracks(source, links, recipe.shortestTrackFrames);
+}
+
+/** How tracers of a sample move and how long their brightness lasts. */
+function learn(sample: Spots, limits: LinkLimits, quick: boolean) {
   const assumed = firstStatistics(sample, limits);
   const rough = linkPass(createSpotTable(sample, BRIGHTNESS_UNTOLD), limits, assumed, BRIGHTNESS_UNTOLD);
   const motion = measureStatistics(sample, rough, limits, assumed, quick ? 1 : 2);
-  const brightness = measureBrightness(sample, rough);
-  const spotSizePx = recipe.spotSizePx ?? SPOT_SIZE_PX;
-  const links = linkInWindows(spots, limits, { motion, brightness, spotSizePx, quick });
-  return assembleTracks(spots, links, recipe.shortestTrackFrames);
-}
-
-function checkOrder(spots: Spots, frames: number): void {
-  for (let s = 1; s < spots.count; s++) {
-    if (spots.frame[s] < spots.frame[s - 1]) {
-      throw new RangeError(
-        `Spots of frame ${spots.frame[s]} came after those of frame ${spots.frame[s - 1]}.`,
-      );
-    }
-  }
-  const last = spots.count > 0 ? spots.frame[spots.count - 1] : 0;
-  if (spots.count > 0 && last >= frames) {
-    throw new RangeError(`A spot is in frame ${last}, but the recording has ${frames} frames.`);
-  }
+  return { motion, brightness: measureBrightness(sample, rough) };
 }

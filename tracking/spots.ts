@@ -3,10 +3,14 @@ import type { Spots } from './types';
 /** The arrays of `Spots`, in the order in which they are stored. */
 const FLOAT_COLUMNS = ['xPx', 'yPx', 'sxPx', 'syPx', 'brightness', 'snr'] as const;
 
+/** All of them, in the order in which they are stored. */
+export const SPOT_COLUMNS = ['frame', ...FLOAT_COLUMNS, 'flags'] as const;
+
 /** "BDSP" read as a little-endian number. */
 const MAGIC = 0x50534442;
 const VERSION = 1;
 const HEADER_BYTES = 16;
+export const SPOTS_HEADER_BYTES = HEADER_BYTES;
 const BYTES_PER_SPOT = 4 + 4 * FLOAT_COLUMNS.length + 1;
 
 /** Takes spots one by one and grows as needed; reuse it by `clear`. */
@@ -127,6 +131,15 @@ export function encodeSpots(spots: Spots): Uint8Array {
   return bytes;
 }
 
+/** How many spots follow a header of 16 bytes. @throws RangeError when it is none of this version. */
+export function readSpotsHeader(header: Uint8Array): number {
+  const view = new DataView(header.buffer, header.byteOffset, header.byteLength);
+  const [magic, version] = [view.getUint32(0, true), view.getUint32(4, true)];
+  if (magic !== MAGIC) throw new RangeError(`These bytes are not spots (they begin with ${magic}).`);
+  if (version !== VERSION) throw new RangeError(`Got spots v${version} when expected v${VERSION}.`);
+  return view.getUint32(8, true);
+}
+
 /** @throws RangeError when the bytes are not spots of this version or end too early. */
 export function decodeSpots(bytes: Uint8Array): Spots {
   if (bytes.length < HEADER_BYTES) {
@@ -135,9 +148,7 @@ export function decodeSpots(bytes: Uint8Array): Spots {
   // A copy starts at an address that 32-bit views may start at; the bytes received may not. `slice` is
   // not enough: that of Node's Buffer gives a view of the same memory.
   const aligned = new Uint8Array(bytes).buffer;
-  const [magic, version, count] = new Uint32Array(aligned, 0, 4);
-  if (magic !== MAGIC) throw new RangeError(`These bytes are not spots (they begin with ${magic}).`);
-  if (version !== VERSION) throw new RangeError(`Got spots v${version} when expected v${VERSION}.`);
+  const count = readSpotsHeader(new Uint8Array(aligned, 0, HEADER_BYTES));
   const expected = HEADER_BYTES + count * BYTES_PER_SPOT;
   if (bytes.length !== expected) {
     throw new RangeError(`Got ${bytes.length} bytes when ${count} spots have ${expected}.`);

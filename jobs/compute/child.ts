@@ -1,10 +1,11 @@
 import { setPriority } from 'node:os';
+import { freeMemory } from './free-memory';
 import type { FromChild, TaskInput, TaskName, TaskOutput, ToChild } from './tasks';
 import { composeStrips } from './steps/compose-strips';
 import { assessRehearsal } from './steps/assess-rehearsal';
 import { detectChunk } from './steps/detect-chunk';
 import { indexStack, inspectStack } from './steps/inspect-stack';
-import { linkTracks } from './steps/link-tracks';
+import { linkFiles, linkTracks } from './steps/link-tracks';
 import { judgeTracks, measureFlow, measureFlowPart } from './steps/measure-flow';
 import { measureImage } from './steps/measure-image';
 import { simulateStack } from './steps/simulate-stack';
@@ -20,6 +21,7 @@ const WORK: Work = {
   measureImage,
   detectChunk,
   linkTracks,
+  linkFiles,
   measureFlow,
   judgeTracks,
   measureFlowPart,
@@ -56,6 +58,7 @@ async function serve({ id, task, input }: ToChild): Promise<void> {
     tell({ id, kind: 'progress', share });
   };
   const before = process.cpuUsage();
+  freeMemory();
   try {
     const work = WORK[task] as (input: unknown, context: WorkContext) => Promise<TaskOutput<TaskName>>;
     const output = await work(input, { onProgress });

@@ -52,11 +52,15 @@ export class ComputeChild {
     private readonly memoryMB: number,
   ) {
     const heapMB = Math.max(64, Math.floor(memoryMB * 0.75));
-    this.process = spawn(process.execPath, [`--max-old-space-size=${heapMB}`, '--enable-source-maps', path], {
-      stdio: ['ignore', 'ignore', 'pipe', 'ipc'],
-      serialization: 'advanced',
-      env: Object.fromEntries(ENVIRONMENT.flatMap((name) => (process.env[name] ? [[name, process.env[name]]] : []))) as NodeJS.ProcessEnv, // prettier-ignore
-    });
+    this.process = spawn(
+      process.execPath,
+      [`--max-old-space-size=${heapMB}`, '--expose-gc', '--enable-source-maps', path],
+      {
+        stdio: ['ignore', 'ignore', 'pipe', 'ipc'],
+        serialization: 'advanced',
+        env: Object.fromEntries(ENVIRONMENT.flatMap((name) => (process.env[name] ? [[name, process.env[name]]] : []))) as NodeJS.ProcessEnv, // prettier-ignore
+      },
+    );
     this.process.on('message', (message) => this.receive(message as FromChild));
     this.process.stderr?.on('data', (data: Buffer) => {
       this.stderr = (this.stderr + data.toString()).slice(-STDERR_KEPT);

@@ -11,6 +11,7 @@ import type { FlowInput, FlowPart, FlowPartResults } from '@/tracking/flow-parts
 import type { PlacedSpot } from '@/tracking/detect';
 import type { TrackPopulations } from '@/tracking/populations/populations';
 import type { Conditions, Recipe, RecipeRequest, Spots, Tracks } from '@/tracking/types';
+import type { TracksAt } from './track-file';
 
 // What is computed in child processes: plain data in, plain data out, no database, no network.
 
@@ -69,8 +70,20 @@ export interface LinkTracksInput {
   recipe: Recipe;
 }
 
+/** Files on this machine's disk instead of messages. */
+export interface LinkFilesInput extends Omit<LinkTracksInput, 'chunks'> {
+  /** Encoded spots of all chunks, in order. */
+  chunkPaths: string[];
+  /** Receives the tracks, see `track-file.ts`. */
+  tracksPath: string;
+}
+export interface LinkFilesOutput {
+  tracks: number;
+  points: number;
+}
+
 export interface MeasureFlowInput {
-  tracks: Tracks;
+  tracks: TracksAt;
   image: ImageSize;
   conditions: Conditions;
   recipe: Recipe;
@@ -79,7 +92,7 @@ export interface MeasureFlowInput {
 }
 
 /** One part of the flow measures, once the tracks are named. */
-export type MeasureFlowPartInput = FlowInput & { part: FlowPart };
+export type MeasureFlowPartInput = Omit<FlowInput, 'tracks'> & { tracks: TracksAt; part: FlowPart };
 
 /** Asks for the position of a tracer near a place in one frame. */
 export interface RefinePointInput {
@@ -144,6 +157,7 @@ export interface Tasks {
   measureImage: { input: MeasureImageInput; output: MeasureImageOutput };
   detectChunk: { input: DetectChunkInput; output: DetectChunkOutput };
   linkTracks: { input: LinkTracksInput; output: Tracks };
+  linkFiles: { input: LinkFilesInput; output: LinkFilesOutput };
   measureFlow: { input: MeasureFlowInput; output: FlowMeasures };
   judgeTracks: { input: MeasureFlowInput; output: TrackPopulations };
   measureFlowPart: { input: MeasureFlowPartInput; output: FlowPartResults[FlowPart] };

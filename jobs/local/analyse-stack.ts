@@ -1,3 +1,5 @@
+import { writeFile } from 'node:fs/promises';
+import { join } from 'node:path';
 import type { ImageFacts } from '@/lib/analysis-facts';
 import type { ReadyStack, StackSource } from '@/stacks/stack-report';
 import type { FlowMeasures } from '@/tracking/flow-measures';
@@ -5,6 +7,7 @@ import type { Conditions, Recipe, RecipeRequest, Tracks } from '@/tracking/types
 import { chunkFramesFor, chunksOf } from '../chunk-plan';
 import type { ComputePool } from '../compute/pool';
 import type { DetectChunkOutput } from '../compute/tasks';
+import { readTrackFile } from '../compute/track-file';
 import { LONG_TIMEOUT_MS } from '../job-timeouts';
 import { InputError } from './local-stack';
 import { measureFlowIn } from './measure-flow-in';
@@ -14,7 +17,7 @@ export type { LocalStage } from './stage-clock';
 
 export interface LocalRequest {
   source: StackSource;
-  /** Empty folder for the frame index. */
+  /** Empty folder for the frame index, and for spots and tracks between stages. */
   workDir: string;
   conditions: Conditions;
   recipe: RecipeRequest;
@@ -85,6 +88,9 @@ async function checkStack(
   return report;
 }
 
+const NONE = new Uint8Array(0);
+const spotsPath = (workDir: string, chunk: number) => join(workDir, `spots-${chunk}.bin`);
+
 async function analyseFrames(
   { workDir, conditions, recipe: asked, chunkFrames }: LocalRequest,
   { frames, width, height }: { frames: number; width: number; height: number },
@@ -103,20 +109,27 @@ async function analyseFrames(
     const chunks = chunksOf(frames, chunkFrames ?? chunkFramesFor(frames, width, height));
     let done = 0;
     return Promise.all(
-      chunks.map(async ({ firstFrame, frames: many }): Promise<DetectChunkOutput> => {
+      chunks.map(async ({ chunk, firstFrame, frames: many }): Promise<DetectChunkOutput> => {
         const input = { stackDir: workDir, model, modelKey: workDir, recipe, firstFrame, frames: many };
         const result = await pool.run('detectChunk', input, { key: workDir, onCpu });
+        await writeFile(spotsPath(workDir, chunk), result.spots);
+        result.spots = NONE;
         onProgress((done += many) / frames);
         return result;
       }),
     );
   });
-  const chunks = found.map(({ spots }) => spots);
-  const tracks = await clock.time('link-tracks', (options) =>
-    pool.run('linkTracks', { chunks, image, recipe }, { ...options, timeoutMs: LONG_TIMEOUT_MS }),
+  const tracksPath = join(workDir, 'tracks.bin');
+  const chunkPaths = found.map((_, chunk) => spotsPath(workDir, chunk));
+  await clock.time('link-tracks', (options) =>
+    pool.run(
+      'linkFiles',
+      { chunkPaths, tracksPath, image, recipe },
+      { ...options, timeoutMs: LONG_TIMEOUT_MS },
+    ),
   );
   const measures = await clock.time('measure-flow', (options) =>
-    measureFlowIn(pool, { tracks, image, conditions, recipe }, options),
+    measureFlowIn(pool, { tracks: { path: tracksPath }, image, conditions, recipe }, options),
   );
   const sum = (pick: (chunk: DetectChunkOutput) => number) =>
     found.reduce((total, chunk) => total + pick(chunk), 0);
@@ -125,7 +138,7 @@ async function analyseFrames(
     facts,
     spots: sum(({ spotCount }) => spotCount),
     spotsPerFrame: found.flatMap(({ spotsPerFrame }) => spotsPerFrame),
-    tracks,
+    tracks: await readTrackFile(tracksPath),
     measures,
     readingShare: sum(({ readingMs }) => readingMs) / sum(({ tookMs }) => tookMs),
   };

@@ -7,13 +7,14 @@ import {
   type FlowPartResults,
 } from '@/tracking/flow-parts';
 import type { ComputePool } from '../compute/pool';
+import type { TracksAt } from '../compute/track-file';
 import { LONG_TIMEOUT_MS } from '../job-timeouts';
 import type { StageOptions } from './stage-clock';
 
 /** The flow measures by the children of a pool: first what tracks are, then all parts as children are free. */
 export async function measureFlowIn(
   pool: ComputePool,
-  input: Omit<FlowInput, 'found'>,
+  input: Omit<FlowInput, 'found' | 'tracks'> & { tracks: TracksAt },
   { onProgress, onCpu }: StageOptions,
 ): Promise<FlowMeasures> {
   const steps = FLOW_PARTS.length + 1;

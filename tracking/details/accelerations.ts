@@ -51,7 +51,8 @@ export function accelerations(
           if (name !== 'all' && population[i] !== code) continue;
           const row = [0, 0, 0];
           let n = 0;
-          for (let p = tracks.start[i] + lag; p + lag < tracks.start[i + 1]; p++) {
+          const points = paths.read(i);
+          for (let p = lag; p + lag < points; p++) {
             if (paths.measured[p - lag] + paths.measured[p] + paths.measured[p + lag] < 3) continue;
             const a = (place[p + lag] - 2 * place[p] + place[p - lag]) / lagS ** 2;
             row[0] += a;

@@ -40,11 +40,10 @@ export function meanSquaredDisplacements(
   for (let i = 0; i < tracks.count; i++) {
     if (!takes(i)) continue;
     taken++;
-    const from = tracks.start[i];
-    const to = tracks.start[i + 1];
+    const points = paths.read(i);
     for (let c = 0; c < columns; c++) {
       const at = packs.pack[i] * columns + c;
-      for (let p = from, q = from + lagFrames[c]; q < to; p++, q++) {
+      for (let p = 0, q = lagFrames[c]; q < points; p++, q++) {
         if (paths.measured[p] + paths.measured[q] < 2) continue;
         count[at]++;
         sums[0][at] += (paths.first[q] - paths.first[p]) ** 2;

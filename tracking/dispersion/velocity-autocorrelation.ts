@@ -40,7 +40,8 @@ export function velocityAutocorrelations(
     for (let i = 0; i < tracks.count; i++) {
       if (!takes(i)) continue;
       taken++;
-      for (let p = tracks.start[i]; p + 1 < tracks.start[i + 1]; p++) {
+      const points = paths.read(i);
+      for (let p = 0; p + 1 < points; p++) {
         if (!has(p)) continue;
         mean += (place[p + 1] - place[p]) / dt;
         samples++;
@@ -50,13 +51,12 @@ export function velocityAutocorrelations(
     mean /= samples;
     for (let i = 0; i < tracks.count; i++) {
       if (!takes(i)) continue;
-      const from = tracks.start[i];
-      const velocities = tracks.start[i + 1] - from - 1;
+      const velocities = paths.read(i) - 1;
       for (let c = 0; c < columns; c++) {
         const lag = lags[c];
         if (velocities < 2 * lag) break;
         const at = packs.pack[i] * columns + c;
-        for (let p = from; p + lag < from + velocities; p++) {
+        for (let p = 0; p + lag < velocities; p++) {
           const q = p + lag;
           if (!has(p) || !has(q)) continue;
           const product = ((place[p + 1] - place[p]) / dt - mean) * ((place[q + 1] - place[q]) / dt - mean);

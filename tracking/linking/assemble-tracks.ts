@@ -1,5 +1,20 @@
+import { frameOfSpot, type SpotSource } from '../spot-source';
 import { POINT_BRIDGED, type Spots, type Tracks } from '../types';
 import type { TrackLinks } from './track-links';
+
+/** Spots fetched at once, and how often that is remembered: tracks that begin together need the same ones. */
+const PAGE_SPOTS = 4096;
+const PAGES_HELD = 64;
+/** Points of a piece of tracks, about. */
+const PIECE_POINTS = 100_000;
+
+/** Tracks that are there for the asking, piece by piece. */
+export interface AssembledTracks {
+  count: number;
+  points: number;
+  /** Tracks in order, some at a time, each piece with starts of its own. */
+  pieces(): Generator<Tracks>;
+}
 
 /**
  * Tracks from links. A frame between two linked spots in which the tracer was missed gets a point
@@ -8,13 +23,14 @@ import type { TrackLinks } from './track-links';
  * frame, then y, then x, so the order of first spots is the order of tracks.
  */
 export function assembleTracks(
-  spots: Spots,
+  source: SpotSource,
   { before, after }: Pick<TrackLinks, 'before' | 'after'>,
   shortest: number,
-): Tracks {
+): AssembledTracks {
   const firsts: number[] = [];
-  const start: number[] = [0];
-  for (let s = 0; s < spots.count; s++) {
+  const lengths: number[] = [];
+  let points = 0;
+  for (let s = 0; s < source.count; s++) {
     if (before[s] >= 0) continue;
     let measured = 0;
     let last = s;
@@ -23,14 +39,46 @@ export function assembleTracks(
       last = k;
     }
     if (measured < shortest) continue;
+    const length = frameOfSpot(source, last) - frameOfSpot(source, s) + 1;
     firsts.push(s);
-    start.push(start[start.length - 1] + spots.frame[last] - spots.frame[s] + 1);
+    lengths.push(length);
+    points += length;
   }
+  function* pieces(): Generator<Tracks> {
+    const pages = new SpotPages(source);
+    for (let from = 0, to = 0; from < firsts.length; from = to) {
+      let room = 0;
+      while (to < firsts.length && (to === from || room + lengths[to] <= PIECE_POINTS)) room += lengths[to++];
+      const tracks = emptyTracks(lengths.slice(from, to), room);
+      for (let i = from; i < to; i++) fill(tracks, tracks.start[i - from], pages, after, firsts[i]);
+      yield tracks;
+    }
+  }
+  return { count: firsts.length, points, pieces };
+}
 
-  const points = start[start.length - 1];
-  const tracks: Tracks = {
-    count: firsts.length,
-    start: Uint32Array.from(start),
+/** All pieces put together. */
+export function wholeTracks({ count, points, pieces }: AssembledTracks): Tracks {
+  const all = emptyTracks(new Array<number>(count).fill(0), points);
+  let track = 0;
+  let at = 0;
+  for (const piece of pieces()) {
+    for (let i = 0; i < piece.count; i++) all.start[track++] = at + piece.start[i];
+    for (const name of COLUMNS) all[name].set(piece[name], at);
+    at += piece.frame.length;
+  }
+  all.start[count] = points;
+  return all;
+}
+
+const COLUMNS = ['frame', 'xPx', 'yPx', 'sxPx', 'syPx', 'brightness', 'flags'] as const;
+
+function emptyTracks(lengths: readonly number[], points: number): Tracks {
+  const start = new Uint32Array(lengths.length + 1);
+  lengths.forEach((length, i) => (start[i + 1] = start[i] + length));
+  return {
+    count: lengths.length,
+    start,
     frame: new Uint32Array(points),
     xPx: new Float32Array(points),
     yPx: new Float32Array(points),
@@ -39,35 +87,71 @@ export function assembleTracks(
     brightness: new Float32Array(points),
     flags: new Uint8Array(points),
   };
-  let at = 0;
-  for (const first of firsts) {
-    for (let s = first, previous = -1; s >= 0; previous = s, s = after[s]) {
-      if (previous >= 0) at = bridge(tracks, at, spots, previous, s);
-      tracks.frame[at] = spots.frame[s];
-      tracks.xPx[at] = spots.xPx[s];
-      tracks.yPx[at] = spots.yPx[s];
-      tracks.sxPx[at] = spots.sxPx[s];
-      tracks.syPx[at] = spots.syPx[s];
-      tracks.brightness[at] = spots.brightness[s];
-      tracks.flags[at] = spots.flags[s];
-      at++;
-    }
-  }
-  return tracks;
 }
 
-/** Writes the points between two spots of a track; returns the place behind them. */
-function bridge(tracks: Tracks, at: number, spots: Spots, from: number, to: number): number {
-  const gap = spots.frame[to] - spots.frame[from];
+/** Writes the points of the track that begins with a spot. */
+function fill(tracks: Tracks, first: number, pages: SpotPages, after: Int32Array, firstSpot: number): void {
+  let at = first;
+  for (let s = firstSpot; s >= 0; s = after[s]) {
+    const { spots, place } = pages.find(s);
+    const frame = spots.frame[place];
+    const [x, y] = [spots.xPx[place], spots.yPx[place]];
+    if (at > first) at = bridge(tracks, at, frame, x, y);
+    tracks.frame[at] = frame;
+    tracks.xPx[at] = x;
+    tracks.yPx[at] = y;
+    tracks.sxPx[at] = spots.sxPx[place];
+    tracks.syPx[at] = spots.syPx[place];
+    tracks.brightness[at] = spots.brightness[place];
+    tracks.flags[at] = spots.flags[place];
+    at++;
+  }
+}
+
+/** Writes the points between the last one written and the next spot; returns the place behind them. */
+function bridge(tracks: Tracks, at: number, frame: number, x: number, y: number): number {
+  const from = at - 1;
+  const gap = frame - tracks.frame[from];
   for (let k = 1; k < gap; k++, at++) {
     const share = k / gap;
-    tracks.frame[at] = spots.frame[from] + k;
-    tracks.xPx[at] = (1 - share) * spots.xPx[from] + share * spots.xPx[to];
-    tracks.yPx[at] = (1 - share) * spots.yPx[from] + share * spots.yPx[to];
+    tracks.frame[at] = tracks.frame[from] + k;
+    tracks.xPx[at] = (1 - share) * tracks.xPx[from] + share * x;
+    tracks.yPx[at] = (1 - share) * tracks.yPx[from] + share * y;
     tracks.sxPx[at] = Number.NaN;
     tracks.syPx[at] = Number.NaN;
     tracks.brightness[at] = Number.NaN;
     tracks.flags[at] = POINT_BRIDGED;
   }
   return at;
+}
+
+/** Spots by their number, a page of them at a time; the pages used last are held. */
+class SpotPages {
+  private readonly held = new Map<number, Spots>();
+  private readonly found: { spots: Spots; place: number };
+  private page = -1;
+
+  constructor(private readonly source: SpotSource) {
+    this.found = { spots: source.slice(0, 0), place: 0 };
+  }
+
+  /** The answer is valid until the next question. */
+  find(spot: number): { spots: Spots; place: number } {
+    const page = Math.floor(spot / PAGE_SPOTS);
+    if (page !== this.page) this.found.spots = this.open(page);
+    this.page = page;
+    this.found.place = spot - page * PAGE_SPOTS;
+    return this.found;
+  }
+
+  private open(page: number): Spots {
+    const { held, source } = this;
+    const known = held.get(page);
+    const spots = known ?? source.slice(page * PAGE_SPOTS, Math.min(source.count, (page + 1) * PAGE_SPOTS));
+    // The one used last stands at the end.
+    held.delete(page);
+    held.set(page, spots);
+    if (held.size > PAGES_HELD) held.delete(held.keys().next().value!);
+    return spots;
+  }
 }

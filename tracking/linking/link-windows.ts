@@ -1,4 +1,4 @@
-import { sliceSpots } from '../spots';
+import { firstOfFrame, frameOfSpot, type SpotSource } from '../spot-source';
 import type { Spots } from '../types';
 import { createSpotTable } from './spot-table';
 import { joinPieces } from './join-pieces';
@@ -35,26 +35,27 @@ export interface LinkKnowledge {
  * @param limits with the whole recording's frames.
  */
 export function linkInWindows(
-  spots: Spots,
+  source: SpotSource,
   limits: LinkLimits,
   known: LinkKnowledge,
   windowFrames = WINDOW_FRAMES,
   marginFrames = MARGIN_FRAMES,
 ): Pick<TrackLinks, 'before' | 'after'> {
-  const { count, frame } = spots;
-  const last = count > 0 ? frame[count - 1] : 0;
-  if (count === 0 || Math.floor(frame[0] / windowFrames) === Math.floor(last / windowFrames)) {
-    return linkWindow(spots, limits, known);
+  const { count } = source;
+  if (count === 0) return linkWindow(source.slice(0, 0), limits, known);
+  const [firstFrame, lastFrame] = [frameOfSpot(source, 0), frameOfSpot(source, count - 1)];
+  if (Math.floor(firstFrame / windowFrames) === Math.floor(lastFrame / windowFrames)) {
+    return linkWindow(source.slice(0, count), limits, known);
   }
   const before = new Int32Array(count).fill(-1);
   const after = new Int32Array(count).fill(-1);
   for (let first = 0; first < count;) {
-    const begin = Math.floor(frame[first] / windowFrames) * windowFrames;
-    const next = firstFrom(frame, count, begin + windowFrames);
-    const from = firstFrom(frame, count, begin - marginFrames);
-    const to = firstFrom(frame, count, begin + windowFrames + marginFrames);
-    const frames = frame[to - 1] - frame[from] + 1;
-    const links = linkWindow(sliceSpots(spots, from, to), { ...limits, frames }, known);
+    const begin = Math.floor(frameOfSpot(source, first) / windowFrames) * windowFrames;
+    const next = firstOfFrame(source, begin + windowFrames);
+    const from = firstOfFrame(source, begin - marginFrames);
+    const to = firstOfFrame(source, begin + windowFrames + marginFrames);
+    const frames = frameOfSpot(source, to - 1) - frameOfSpot(source, from) + 1;
+    const links = linkWindow(source.slice(from, to), { ...limits, frames }, known);
     for (let s = first; s < next; s++) {
       const b = links.before[s - from];
       // The window before may have decided otherwise on a spot near its end: first come, first served.
@@ -77,16 +78,4 @@ function linkWindow(spots: Spots, limits: LinkLimits, known: LinkKnowledge): Tra
   }
   joinPieces(table, links, limits, motion, brightness);
   return links;
-}
-
-/** First spot in a frame of at least that number. */
-function firstFrom(frame: Uint32Array, count: number, least: number): number {
-  let low = 0;
-  let high = count;
-  while (low < high) {
-    const middle = (low + high) >> 1;
-    if (frame[middle] < least) low = middle + 1;
-    else high = middle;
-  }
-  return low;
 }

@@ -3,6 +3,7 @@ import { measureFlowPart as measurePart, type FlowPart, type FlowPartResults } f
 import { judgeTracks as judge, measureFlow as measure } from '@/tracking/measure-flow';
 import type { TrackPopulations } from '@/tracking/populations/populations';
 import type { MeasureFlowInput, MeasureFlowPartInput } from '../tasks';
+import { tracksAt } from '../track-file';
 import type { WorkContext } from './work-context';
 
 /** Populations, velocities, reconnections and estimates of a recording's tracks. */
@@ -10,7 +11,7 @@ export async function measureFlow(
   input: MeasureFlowInput,
   { onProgress }: WorkContext,
 ): Promise<FlowMeasures> {
-  return measure(input.tracks, input.image, input.conditions, input.recipe, {
+  return measure(await tracksAt(input.tracks), input.image, input.conditions, input.recipe, {
     known: input.known,
     onProgress: (share) => onProgress(share),
   });
@@ -18,13 +19,14 @@ export async function measureFlow(
 
 /** Populations alone: what every part of the flow measures goes on from. */
 export async function judgeTracks(input: MeasureFlowInput): Promise<TrackPopulations> {
-  return judge(input.tracks, input.image, input.conditions, input.recipe, input.known);
+  return judge(await tracksAt(input.tracks), input.image, input.conditions, input.recipe, input.known);
 }
 
 /** One part of the flow measures; several processes may have one each. */
 export async function measureFlowPart({
   part,
+  tracks,
   ...input
 }: MeasureFlowPartInput): Promise<FlowPartResults[FlowPart]> {
-  return measurePart(part, input);
+  return measurePart(part, { ...input, tracks: await tracksAt(tracks) });
 }

@@ -3,6 +3,7 @@ import { linkInWindows } from '@/tracking/linking/link-windows';
 import { BRIGHTNESS_UNTOLD } from '@/tracking/linking/brightness-statistics';
 import { firstStatistics } from '@/tracking/linking/motion-statistics';
 import { createRandom } from '@/tracking/random';
+import { heldSpots } from '@/tracking/spot-source';
 import { createSpotSink } from '@/tracking/spots';
 import type { Spots } from '@/tracking/types';
 
@@ -30,7 +31,7 @@ function wanderers(tracers: number): Spots {
 const link = (spots: Spots, windowFrames: number) => {
   const motion = firstStatistics(spots, LIMITS);
   const known = { motion, brightness: BRIGHTNESS_UNTOLD, spotSizePx: 1.2, quick: false };
-  return linkInWindows(spots, LIMITS, known, windowFrames, 40);
+  return linkInWindows(heldSpots(spots, LIMITS.frames), LIMITS, known, windowFrames, 40);
 };
 
 test('a recording linked some frames at a time has the links that it has as a whole, but for a few in a crowd', () => {

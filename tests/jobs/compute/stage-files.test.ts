@@ -1,0 +1,124 @@
+import { mkdtemp, readFile, rm, truncate, writeFile } from 'node:fs/promises';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+import { afterAll, beforeAll, expect, test } from 'vitest';
+import { openSpotFiles } from '@/jobs/compute/spot-files';
+import { linkFiles } from '@/jobs/compute/steps/link-tracks';
+import { readTrackFile, TrackFileWriter, tracksAt, writeTrackFile } from '@/jobs/compute/track-file';
+import { linkSpots } from '@/tracking/link';
+import { createRandom } from '@/tracking/random';
+import { createSpotSink, encodeSpots, sliceSpots } from '@/tracking/spots';
+import type { Spots, Tracks } from '@/tracking/types';
+
+/** Three windows of linking, and more spots than motion is learned from. */
+const FRAMES = 2300;
+const IMAGE = { frames: FRAMES, width: 150, height: 150 };
+const RECIPE = { longestStepPx: 6, mayVanishFrames: 2, shortestTrackFrames: 3, spotSizePx: 1.2 };
+
+let folder: string;
+let spots: Spots;
+
+/** Tracers that wander about for the whole recording, now and then missed. */
+function wanderers(tracers: number): Spots {
+  const random = createRandom(12);
+  const movers = Array.from({ length: tracers }, () => ({
+    x: 150 * random.uniform(),
+    y: 150 * random.uniform(),
+  }));
+  const sink = createSpotSink();
+  for (let f = 0; f < FRAMES; f++) {
+    for (const mover of movers) {
+      mover.x = Math.min(149, Math.max(0, mover.x + 0.4 * random.normal()));
+      mover.y = Math.min(149, Math.max(0, mover.y + 0.4 * random.normal()));
+    }
+    const seen = movers.filter(() => random.uniform() > 0.05).sort((a, b) => a.y - b.y || a.x - b.x);
+    for (const { x, y } of seen) sink.push(f, x, y, 0.1, 0.1, 400, 20, 0);
+  }
+  return sink.spots();
+}
+
+beforeAll(async () => {
+  folder = await mkdtemp(join(tmpdir(), 'beadline-stage-files-'));
+  spots = wanderers(20);
+});
+afterAll(() => rm(folder, { recursive: true, force: true }));
+
+/** Bit by bit, which for long arrays is quicker than looking at each number. */
+function expectSameTracks(got: Tracks, expected: Tracks): void {
+  expect(got.count).toBe(expected.count);
+  for (const name of ['start', 'frame', 'xPx', 'yPx', 'sxPx', 'syPx', 'brightness', 'flags'] as const) {
+    const [a, b] = [got[name], expected[name]].map((v) => Buffer.from(v.buffer, v.byteOffset, v.byteLength));
+    expect(a.equals(b), name).toBe(true);
+  }
+}
+
+/** The spots in so many files. */
+async function inFiles(files: number): Promise<string[]> {
+  const paths: string[] = [];
+  for (let k = 0; k < files; k++) {
+    const [from, to] = [k, k + 1].map((n) => Math.round((n * spots.count) / files));
+    paths.push(join(folder, `spots-${files}-${k}.bin`));
+    await writeFile(paths[k], encodeSpots(sliceSpots(spots, from, to)));
+  }
+  return paths;
+}
+
+test('linking from files to a file gives the bits of linking what is held, in however many files the spots are', async () => {
+  const expected = linkSpots(spots, IMAGE, RECIPE);
+  expect(expected.count).toBeGreaterThan(10);
+  // Some go on from window to window.
+  expect(Math.max(...Array.from({ length: expected.count }, (_, i) => expected.start[i + 1] - expected.start[i]))).toBeGreaterThan(1000); // prettier-ignore
+  for (const files of [1, 7]) {
+    const tracksPath = join(folder, `tracks-${files}.bin`);
+    const recipe = RECIPE as Parameters<typeof linkFiles>[0]['recipe'];
+    const told = await linkFiles(
+      { chunkPaths: await inFiles(files), tracksPath, image: IMAGE, recipe },
+      { onProgress: () => undefined },
+    );
+    expect(told).toEqual({ tracks: expected.count, points: expected.frame.length });
+    expectSameTracks(await readTrackFile(tracksPath), expected);
+  }
+}, 60_000);
+
+test('any run of spots comes from files as it was written', async () => {
+  const source = openSpotFiles(await inFiles(5), FRAMES);
+  const random = createRandom(4);
+  expect(source.count).toBe(spots.count);
+  for (let round = 0; round < 30; round++) {
+    const from = random.integer(spots.count);
+    const to = from + random.integer(spots.count - from + 1);
+    const bytes = encodeSpots(source.slice(from, to));
+    expect(Buffer.from(bytes).equals(encodeSpots(sliceSpots(spots, from, to)))).toBe(true);
+  }
+  for (const frame of [0, 1, 1234, FRAMES - 1]) {
+    expect(source.frameStart[frame]).toBe(spots.frame.findIndex((one) => one >= frame));
+  }
+  source.close();
+});
+
+test('files out of order, of too many frames, cut short or of something else are told as such', async () => {
+  const paths = await inFiles(3);
+  expect(() => openSpotFiles([paths[1], paths[0]], FRAMES)).toThrow('came after those of frame');
+  expect(() => openSpotFiles(paths, FRAMES - 1)).toThrow(`but the recording has ${FRAMES - 1} frames`);
+  await truncate(paths[2], 100);
+  expect(() => openSpotFiles(paths, FRAMES)).toThrow('ends too early');
+  await writeFile(paths[2], 'something else entirely');
+  expect(() => openSpotFiles(paths, FRAMES)).toThrow('These bytes are not spots');
+  await expect(readTrackFile(paths[2])).rejects.toThrow('These bytes are not tracks');
+});
+
+test('tracks come back from their file, none too, and a writer that was given others than announced says so', async () => {
+  const path = join(folder, 'some.bin');
+  const tracks = linkSpots(sliceSpots(spots, 0, 600), IMAGE, RECIPE);
+  await writeTrackFile(path, tracks);
+  expect(await tracksAt({ path })).toEqual(tracks);
+  const none = linkSpots(sliceSpots(spots, 0, 0), IMAGE, RECIPE);
+  await writeTrackFile(path, none);
+  expect(await readTrackFile(path)).toEqual(none);
+  const writer = await TrackFileWriter.create(path, { tracks: tracks.count + 1, points: 0 });
+  await writer.append(tracks);
+  await expect(writer.close()).rejects.toThrow(`Got ${tracks.count} tracks`);
+  await writeTrackFile(path, tracks);
+  await truncate(path, (await readFile(path)).length - 1);
+  await expect(readTrackFile(path)).rejects.toThrow('bytes when the tracks have');
+});
