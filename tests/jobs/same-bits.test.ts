@@ -64,6 +64,7 @@ async function prepare() {
     picked.map((f) => all[f]),
     {},
     picked,
+    kernelsOfThisProcess(),
   );
   const recipe = resolveRecipe({}, { ...model, frames, pixelSizeM: PIXEL_SIZE_M });
   return { all, recipe, detector: createDetector(model, recipe, kernelsOfThisProcess()) };
