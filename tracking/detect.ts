@@ -2,6 +2,7 @@ import { createFrameSearch } from './detection/frame-search';
 import { createSpotFlags } from './detection/spot-flags';
 import { createSpotOrder } from './detection/spot-order';
 import { statedError } from './detection/stated-error';
+import { keepCompiled } from './kernels/keep-compiled';
 import type { Kernels } from './kernels/kernels';
 import { plainKernels } from './kernels/plain-kernels';
 import type { SpotSink } from './spots';
@@ -97,5 +98,5 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
     return isSpot(i) && certain && away(i) <= reachPx ? placed(i, false) : null;
   };
 
-  return { detect, placeAt };
+  return keepCompiled('detector', { detect, placeAt });
 }

@@ -1,5 +1,6 @@
 import { fitBackground } from './image-model/background-nodes';
 import { findBadPixels } from './image-model/bad-pixels';
+import { varianceOf, type PixelNoise } from './image-model/pixel-noise';
 import { interpolateBlocks } from './image-model/block-grid';
 import { blockStatistics } from './image-model/block-statistics';
 import { measureCameraNoise } from './image-model/photon-transfer';
@@ -7,6 +8,7 @@ import { findQuietPixels } from './image-model/quiet-pixels';
 import { findSaturation } from './image-model/saturation';
 import { spotFrames } from './image-model/spot-frames';
 import { measureSpotSize } from './image-model/spot-size';
+import { keepCompiled } from './kernels/keep-compiled';
 import type { Kernels } from './kernels/kernels';
 import { plainKernels } from './kernels/plain-kernels';
 import type { Frame, ImageModel, RecipeRequest } from './types';
@@ -66,15 +68,18 @@ export function measureImage(
 ): ImageModel {
   checkFrames(frames, frameNumbers);
   const { width, height } = frames[0];
-  const quietPixels = findQuietPixels(frames, kernels.forPairs(width, height));
+  const quietPixels = findQuietPixels(
+    frames,
+    keepCompiled('pairs of frames', kernels.forPairs(width, height)),
+  );
   const statistics = blockStatistics(quietPixels);
   const camera = measureCameraNoise(quietPixels, statistics, request);
   const { meanE, drift } = fitBackground(statistics, camera, frameNumbers && pairNumbers(frameNumbers));
   const backgroundE = interpolateBlocks(meanE, statistics.grid);
   for (let i = 0; i < backgroundE.length; i++) if (backgroundE[i] < 0) backgroundE[i] = 0;
   const { sums, level } = quietPixels;
-  const varianceAt = pixelVariance(backgroundE, camera);
-  const badPixels = findBadPixels(sums, varianceAt, statistics.pairs, frames.length, width, height);
+  const noise = pixelNoise(backgroundE, camera);
+  const badPixels = findBadPixels(sums, noise, statistics.pairs, frames.length, width, height);
   const middle = (height >> 1) * width + (width >> 1);
   const model: ImageModel = {
     width,
@@ -86,7 +91,7 @@ export function measureImage(
       sums.highest,
       sums.highestPixels,
       level[middle],
-      varianceAt(middle),
+      varianceOf(noise, middle),
     ),
     badPixels,
     backgroundE,
@@ -121,11 +126,9 @@ function pairNumbers(frameNumbers: readonly number[]): Float64Array {
   });
 }
 
-/** Variance of one pixel of one frame, counts^2. */
-function pixelVariance(
+function pixelNoise(
   backgroundE: Float32Array,
   { gainCountsPerE, readNoiseE }: Pick<ImageModel, 'gainCountsPerE' | 'readNoiseE'>,
-): (pixel: number) => number {
-  const square = gainCountsPerE * gainCountsPerE;
-  return (pixel) => square * (backgroundE[pixel] + readNoiseE * readNoiseE) + 1e-12;
+): PixelNoise {
+  return { backgroundE, square: gainCountsPerE * gainCountsPerE, readVariance: readNoiseE * readNoiseE };
 }

@@ -32,39 +32,45 @@ export interface SpotSink {
 }
 
 /** @param room spots that fit before the arrays grow for the first time. */
-export function createSpotSink(room = 1024): SpotSink {
-  let held = emptySpots(Math.max(1, room));
-  let count = 0;
-  const grow = () => {
-    const wider = emptySpots(2 * held.frame.length);
-    copySpots(held, wider, 0, count);
-    held = wider;
-  };
-  return {
-    get count() {
-      return count;
-    },
-    push(frame, xPx, yPx, sxPx, syPx, brightness, snr, flags) {
-      if (count === held.frame.length) grow();
-      held.frame[count] = frame;
-      held.xPx[count] = xPx;
-      held.yPx[count] = yPx;
-      held.sxPx[count] = sxPx;
-      held.syPx[count] = syPx;
-      held.brightness[count] = brightness;
-      held.snr[count] = snr;
-      held.flags[count] = flags;
-      count++;
-    },
-    spots() {
-      const out = emptySpots(count);
-      copySpots(held, out, 0, count);
-      return out;
-    },
-    clear() {
-      count = 0;
-    },
-  };
+export const createSpotSink = (room = 1024): SpotSink => new GrowingSpots(room);
+
+class GrowingSpots implements SpotSink {
+  count = 0;
+  private held: Spots;
+
+  constructor(room: number) {
+    this.held = emptySpots(Math.max(1, room));
+  }
+
+  push(...[frame, xPx, yPx, sxPx, syPx, brightness, snr, flags]: Parameters<SpotSink['push']>): void {
+    if (this.count === this.held.frame.length) this.grow();
+    const { held, count } = this;
+    held.frame[count] = frame;
+    held.xPx[count] = xPx;
+    held.yPx[count] = yPx;
+    held.sxPx[count] = sxPx;
+    held.syPx[count] = syPx;
+    held.brightness[count] = brightness;
+    held.snr[count] = snr;
+    held.flags[count] = flags;
+    this.count++;
+  }
+
+  spots(): Spots {
+    const out = emptySpots(this.count);
+    copySpots(this.held, out, 0, this.count);
+    return out;
+  }
+
+  clear(): void {
+    this.count = 0;
+  }
+
+  private grow(): void {
+    const wider = emptySpots(2 * this.held.frame.length);
+    copySpots(this.held, wider, 0, this.count);
+    this.held = wider;
+  }
 }
 
 /** Arrays of zeros for `count` spots. */

@@ -62,6 +62,7 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
   const bestSize = new Uint8Array(JOINT_SPOTS_MOST);
   /** Sizes of the members in the attempt at hand. */
   const size = new Uint8Array(JOINT_SPOTS_MOST);
+  const best = { likelihood: -Infinity };
   const widest = { split: -1, splitX: 0, splitY: 0 };
   let offsetSpreadE = 1;
 
@@ -222,6 +223,20 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
     return cost;
   };
 
+  /** Fits the members and one more as they were put; true when that is likelier than all before, and kept then. */
+  const attempt = (count: number): boolean => {
+    joint.run(count + 1, offsetSpreadE);
+    let likelihood = joint.logLikelihood();
+    for (let k = 0; k < count; k++) likelihood -= sizes.cost[size[k]];
+    if (!(likelihood > best.likelihood && areApart(count + 1))) return false;
+    best.likelihood = likelihood;
+    bestX.set(joint.x);
+    bestY.set(joint.y);
+    bestN.set(joint.n);
+    bestSize.set(size);
+    return true;
+  };
+
   /** Tries one more spot near those fitted; true when the data ask for it. */
   const tryOneMore = (table: SpotTable, members: Int32Array, count: number, gainLeast: number): boolean => {
     const peak = joint.look();
@@ -247,26 +262,14 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
       if (near) beside += joint.n[k];
     }
     const wanted = gainWanted(gainLeast, beside);
-    let best = before + 0.5 * wanted;
+    best.likelihood = before + 0.5 * wanted;
     let found = false;
-    const attempt = () => {
-      joint.run(count + 1, offsetSpreadE);
-      let likelihood = joint.logLikelihood();
-      for (let k = 0; k < count; k++) likelihood -= sizes.cost[size[k]];
-      if (!(likelihood > best && areApart(count + 1))) return;
-      found = true;
-      best = likelihood;
-      bestX.set(joint.x);
-      bestY.set(joint.y);
-      bestN.set(joint.n);
-      bestSize.set(size);
-    };
     if (response >= RESPONSE_TRIED) {
       startBeside(table, members, count);
       joint.x[count] = peakX;
       joint.y[count] = peakY;
       joint.n[count] = peakN;
-      attempt();
+      found = attempt(count);
     }
     if (split >= 0) {
       startBeside(table, members, count);
@@ -279,7 +282,7 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
       joint.y[split] -= splitY;
       joint.n[split] *= 0.5;
       joint.n[count] = joint.n[split];
-      attempt();
+      found = attempt(count) || found;
     }
     if (found) addFound(table, members, count, response);
     paintAll(table, members, found ? count + 1 : count, 1);

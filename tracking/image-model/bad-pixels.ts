@@ -1,5 +1,6 @@
 import { BLOCK_PX } from './block-grid';
 import type { ScanSums } from './pair-scan';
+import { varianceOf, type PixelNoise } from './pixel-noise';
 
 /** A pixel's mean must be off by this many standard errors, and by this much of the noise of one frame. */
 const OFF_STANDARD_ERRORS = 8;
@@ -27,11 +28,11 @@ const STUCK_BY_CHANCE = 1e-10;
  * look as usual.
  *
  * @param sums of what pixels are above the background, over `pairs` pairs of altogether `frames` frames.
- * @param varianceAt expected variance of a pixel of one frame, counts^2.
+ * @param noise of one frame, by pixel.
  */
 export function findBadPixels(
   { sum, squares }: Pick<ScanSums, 'sum' | 'squares'>,
-  varianceAt: (pixel: number) => number,
+  noise: PixelNoise,
   pairs: number,
   frames: number,
   width: number,
@@ -44,28 +45,51 @@ export function findBadPixels(
   const stuckShare = frames < STUCK_FRAMES_LEAST ? 0 : shareByChance(frames);
   let count = 0;
   for (let i = 0; i < pixels; i++) {
-    const expected = varianceAt(i);
+    const expected = varianceOf(noise, i);
     const off = sum[i] / pairs;
     const meanSquare = squares[i] / pairs;
     const stuck = meanSquare - off * off < stuckShare * expected;
-    if (stuck || isHot(i, off, expected) || isBlinking(i, meanSquare - expected, expected)) {
+    if (
+      stuck ||
+      isHot(sum, i, off, offShare * offShare * expected, pairs, width, height) ||
+      isBlinking(squares, i, meanSquare - expected, blinkingShare * expected, expected, pairs, width, height)
+    ) {
       bad[i] = 1;
       count++;
     }
   }
   // Whole dark regions or a frozen recording are a property of the recording, not of its pixels.
   return count > pixels / BLOCK_PX ? new Uint8Array(pixels) : bad;
+}
 
-  function isHot(i: number, off: number, expected: number): boolean {
-    if (off * off < offShare * offShare * expected) return false;
-    return neighbourMean(sum, i, width, height) / pairs / off < NEIGHBOUR_SHARE_MOST;
-  }
+/** Whether a pixel stands out by `off` at least and its neighbours don't. */
+function isHot(
+  sum: Float32Array,
+  i: number,
+  off: number,
+  least: number,
+  pairs: number,
+  width: number,
+  height: number,
+): boolean {
+  if (off * off < least) return false;
+  return neighbourMean(sum, i, width, height) / pairs / off < NEIGHBOUR_SHARE_MOST;
+}
 
-  function isBlinking(i: number, excess: number, expected: number): boolean {
-    if (excess < blinkingShare * expected) return false;
-    const around = neighbourMean(squares, i, width, height) / pairs - expected;
-    return around < BLINKING_NEIGHBOUR_SHARE_MOST * excess;
-  }
+/** Whether a pixel's mean square exceeds `expected` by `least` at least and its neighbours' doesn't. */
+function isBlinking(
+  squares: Float32Array,
+  i: number,
+  excess: number,
+  least: number,
+  expected: number,
+  pairs: number,
+  width: number,
+  height: number,
+): boolean {
+  if (excess < least) return false;
+  const around = neighbourMean(squares, i, width, height) / pairs - expected;
+  return around < BLINKING_NEIGHBOUR_SHARE_MOST * excess;
 }
 
 /** Lower tail of chi^2 with k degrees of freedom: (x / 2)^(k / 2) / Gamma(k / 2 + 1) for small x. */
@@ -79,15 +103,15 @@ function shareByChance(frames: number): number {
 
 function neighbourMean(values: Float32Array, at: number, width: number, height: number): number {
   const x = at % width;
+  const left = x > 0 ? 1 : 0;
+  const right = x < width - 1 ? 1 : 0;
+  const up = at >= width ? 1 : 0;
+  const down = at < width * (height - 1) ? 1 : 0;
+  const count = left + right + up + down;
   let sum = 0;
-  let count = 0;
-  const take = (i: number) => {
-    sum += values[i];
-    count++;
-  };
-  if (x > 0) take(at - 1);
-  if (x < width - 1) take(at + 1);
-  if (at >= width) take(at - width);
-  if (at < width * (height - 1)) take(at + width);
+  if (left === 1) sum += values[at - 1];
+  if (right === 1) sum += values[at + 1];
+  if (up === 1) sum += values[at - width];
+  if (down === 1) sum += values[at + width];
   return count > 0 ? sum / count : 0;
 }

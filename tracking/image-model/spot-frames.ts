@@ -1,4 +1,5 @@
 import { DARK_VARIANCE_E2 } from '../detection/second-look';
+import { keepCompiled } from '../kernels/keep-compiled';
 import type { CountScale, FrameKernels, Kernels, Peaks } from '../kernels/kernels';
 import { electronScale, electronsOf } from '../kernels/noise-units';
 import type { Frame, ImageModel } from '../types';
@@ -99,7 +100,7 @@ export function spotFrames(
   const forSpots: SpotFrames['forSpots'] = (sigmaPx) => {
     const images = imagesFor(sigmaPx);
     let frame = frames[0];
-    return {
+    return keepCompiled('spot finder', {
       kernelSquares: images.kernel.squares,
       response: images.response,
       peaksOf: (index, level) => {
@@ -124,7 +125,7 @@ export function spotFrames(
         }
         return { side, electrons, background, usable };
       },
-    };
+    });
   };
   return { width, height, count, readVariance, forSpots };
 }

@@ -92,12 +92,12 @@ interface Shadows {
 }
 
 /** Where tracks are thought to be in frames in which they have no spot, by frame. */
-function shadowPoints(table: SpotTable, { before, after }: TrackLinks, beyond: number): Shadows {
+function shadowPoints(table: SpotTable, links: TrackLinks, beyond: number): Shadows {
   const first = table.count > 0 ? table.frame[0] : 0;
   const last = table.count > 0 ? table.frame[table.count - 1] : 0;
   // Counted first, frame by frame, then written where the counts say.
   const place = new Int32Array(last - first + 2);
-  eachShadow((frame) => place[frame - first + 1]++);
+  goThroughShadows(table, links, beyond, first, last, place, null);
   for (let f = 1; f < place.length; f++) place[f] += place[f - 1];
   const count = place[place.length - 1];
   const shadows: Shadows = {
@@ -107,29 +107,39 @@ function shadowPoints(table: SpotTable, { before, after }: TrackLinks, beyond: n
     yPx: new Float64Array(count),
     spot: new Int32Array(count),
   };
-  eachShadow((frame, s, from, share) => {
-    const k = place[frame - first]++;
-    shadows.frame[k] = frame;
-    shadows.xPx[k] = table.xPx[from] + share * (table.xPx[s] - table.xPx[from]);
-    shadows.yPx[k] = table.yPx[from] + share * (table.yPx[s] - table.yPx[from]);
-    shadows.spot[k] = s;
-  });
+  goThroughShadows(table, links, beyond, first, last, place, shadows);
   return shadows;
+}
 
-  /** Calls `take` with the frame, the spot of the track, the one before the gap and the share of the gap. */
-  function eachShadow(take: (frame: number, s: number, from: number, share: number) => void): void {
-    for (let s = 0; s < table.count; s++) {
-      const at = table.frame[s];
-      const b = before[s];
-      if (b < 0) {
-        for (let f = Math.max(first, at - beyond); f < at; f++) take(f, s, s, 0);
-      } else {
-        for (let f = table.frame[b] + 1; f < at; f++) {
-          take(f, s, b, (f - table.frame[b]) / (at - table.frame[b]));
-        }
+/** Counts shadows by frame, one place behind the frame's own; with `out` writes each where the counts say. */
+function goThroughShadows(
+  table: SpotTable,
+  { before, after }: TrackLinks,
+  beyond: number,
+  first: number,
+  last: number,
+  place: Int32Array,
+  out: Shadows | null,
+): void {
+  for (let s = 0; s < table.count; s++) {
+    const at = table.frame[s];
+    const b = before[s];
+    const from = b < 0 ? Math.max(first, at - beyond) : table.frame[b] + 1;
+    const to = after[s] >= 0 ? at : Math.min(last, at + beyond);
+    for (let f = from; f <= to; f++) {
+      if (f === at) continue;
+      if (out === null) {
+        place[f - first + 1]++;
+        continue;
       }
-      if (after[s] >= 0) continue;
-      for (let f = at + 1; f <= Math.min(last, at + beyond); f++) take(f, s, s, 0);
+      const k = place[f - first]++;
+      const inGap = b >= 0 && f < at;
+      const share = inGap ? (f - table.frame[b]) / (at - table.frame[b]) : 0;
+      const start = inGap ? b : s;
+      out.frame[k] = f;
+      out.xPx[k] = table.xPx[start] + share * (table.xPx[s] - table.xPx[start]);
+      out.yPx[k] = table.yPx[start] + share * (table.yPx[s] - table.yPx[start]);
+      out.spot[k] = s;
     }
   }
 }

@@ -1,4 +1,5 @@
 import { createAssignmentSolver } from '../assign';
+import { keepCompiled } from '../kernels/keep-compiled';
 import type { BrightnessStatistics } from './brightness-statistics';
 import { createEdges } from './edges';
 import type { LinkLimits } from './link-limits';
@@ -33,8 +34,8 @@ export function linkPass(
   const cells = new SpotCells(width, height, Math.max(CELL_LEAST_PX, Math.min(longestStepPx, spacing)));
   const tracers = new TracerFilter(motion, brightness, table, 1, 1024);
   const gate = new Gate(tracers, table, cells, longestStepPx, reach);
-  const solver = createAssignmentSolver();
-  const edges = createEdges();
+  const solver = keepCompiled('assignment solver', createAssignmentSolver());
+  const edges = keepCompiled('edges', createEdges());
   let tracerCount = 0;
   let spotOf = new Int32Array(1024);
   /** Spots within reach of tracer i are `near[nearStart[i] .. nearStart[i + 1] - 1]`, counted from the frame's first. */
@@ -45,16 +46,6 @@ export function linkPass(
   let rows = new Int32Array(1024);
   let rowSpot = new Int32Array(1024);
   let taken = new Uint8Array(1024);
-
-  const forget = () => {
-    let kept = 0;
-    for (let i = 0; i < tracerCount; i++) {
-      if (tracers.missed[i] > mayVanishFrames) continue;
-      if (kept !== i) tracers.copy(i, kept);
-      kept++;
-    }
-    tracerCount = kept;
-  };
 
   let from = 0;
   while (from < table.count) {
@@ -120,7 +111,7 @@ export function linkPass(
       before[s] = tracers.spot[i];
       tracers.update(i, s);
     }
-    forget();
+    tracerCount = tracers.forget(tracerCount, mayVanishFrames);
     for (let s = from; s < to; s++) {
       if (taken[s - from] !== 0) continue;
       if (tracerCount === tracers.room) tracers.grow();
@@ -133,7 +124,7 @@ export function linkPass(
         tracers.predict(i);
         tracers.missed[i]++;
       }
-      forget();
+      tracerCount = tracers.forget(tracerCount, mayVanishFrames);
     }
     from = to;
   }

@@ -121,6 +121,17 @@ export class TracerFilter {
     this.missed[to] = this.missed[from];
   }
 
+  /** Gives up tracers that were missed for longer than that; the others move up. Returns how many are left. */
+  forget(count: number, mayVanishFrames: number): number {
+    let kept = 0;
+    for (let i = 0; i < count; i++) {
+      if (this.missed[i] > mayVanishFrames) continue;
+      if (kept !== i) this.copy(i, kept);
+      kept++;
+    }
+    return kept;
+  }
+
   start(i: number, s: number): void {
     const { brightness, table, values, flow } = this;
     const at = STRIDE * i;
