@@ -156,21 +156,25 @@ describe.each(THEMES)('every page in the %s theme', (theme) => {
     LONG_MS,
   );
 
-  it('says what to do where there is nothing yet', async () => {
-    const pages = [
-      '/',
-      '/campaigns',
-      '/analyses',
-      '/review',
-      '/compare',
-      '/compare?view=velocities',
-      '/exports',
-      '/search',
-      '/rehearsals',
-      '/lab/tokens',
-    ];
-    await look(empty, 'principal_investigator', pages, theme, 'wide', 'empty');
-  }, LONG_MS);
+  it(
+    'says what to do where there is nothing yet',
+    async () => {
+      const pages = [
+        '/',
+        '/campaigns',
+        '/analyses',
+        '/review',
+        '/compare',
+        '/compare?view=velocities',
+        '/exports',
+        '/search',
+        '/rehearsals',
+        '/lab/tokens',
+      ];
+      await look(empty, 'principal_investigator', pages, theme, 'wide', 'empty');
+    },
+    LONG_MS,
+  );
 
   it.each(['/sign-in', '/new-password', '/new-password/closed'])(
     '%s has no serious violation',
