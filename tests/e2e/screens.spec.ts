@@ -62,14 +62,20 @@ const PAGES: Partial<Record<Role, string[]>> = {
   ],
 };
 
-/** Made of what other pages show as well: looked at in one theme only. */
-const IN_ONE_THEME = new Set([
-  '/compare?view=courses',
-  '/compare?view=profiles',
-  '/campaigns/CAMPAIGN/runs/new',
-  '/runs/RUN/analyses',
-  '/search?q=run',
-  '/lab/mail/MAIL',
+/** All parts that pages are made of: looked at in the dark theme too. The others are made of the same. */
+const IN_BOTH_THEMES = new Set([
+  '/',
+  '/runs/RUN',
+  '/recordings/RECORDING',
+  '/analyses/ANALYSIS',
+  '/analyses/ANALYSIS/edit',
+  '/compare?view=velocities&scale=deviation',
+  '/exports',
+  '/account',
+  '/review',
+  '/lab',
+  '/lab/queue',
+  '/lab/audit',
 ]);
 
 let browser: Browser;
@@ -128,7 +134,7 @@ async function look(
   const { context, page, complaints } = await openWindow(browser, { theme, size });
   await signIn(page, lab.people[role]);
   for (const path of pages) {
-    if (theme === 'dark' && IN_ONE_THEME.has(path)) continue;
+    if (theme === 'dark' && !IN_BOTH_THEMES.has(path)) continue;
     complaints.length = 0;
     await page.goto(addressOf(path), { waitUntil: 'load' });
     await page.getByRole('main').waitFor();
