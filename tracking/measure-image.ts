@@ -8,7 +8,6 @@ import { findQuietPixels } from './image-model/quiet-pixels';
 import { findSaturation } from './image-model/saturation';
 import { spotFrames } from './image-model/spot-frames';
 import { measureSpotSize } from './image-model/spot-size';
-import { keepCompiled } from './kernels/keep-compiled';
 import type { Kernels } from './kernels/kernels';
 import { plainKernels } from './kernels/plain-kernels';
 import type { Frame, ImageModel, RecipeRequest } from './types';
@@ -68,10 +67,7 @@ export function measureImage(
 ): ImageModel {
   checkFrames(frames, frameNumbers);
   const { width, height } = frames[0];
-  const quietPixels = findQuietPixels(
-    frames,
-    keepCompiled('pairs of frames', kernels.forPairs(width, height)),
-  );
+  const quietPixels = findQuietPixels(frames, kernels.forPairs(width, height));
   const statistics = blockStatistics(quietPixels);
   const camera = measureCameraNoise(quietPixels, statistics, request);
   const { meanE, drift } = fitBackground(statistics, camera, frameNumbers && pairNumbers(frameNumbers));

@@ -9,8 +9,7 @@ export const SPOT_COLUMNS = ['frame', ...FLOAT_COLUMNS, 'flags'] as const;
 /** "BDSP" read as a little-endian number. */
 const MAGIC = 0x50534442;
 const VERSION = 1;
-const HEADER_BYTES = 16;
-export const SPOTS_HEADER_BYTES = HEADER_BYTES;
+export const SPOTS_HEADER_BYTES = 16;
 const BYTES_PER_SPOT = 4 + 4 * FLOAT_COLUMNS.length + 1;
 
 /** Takes spots one by one and grows as needed; reuse it by `clear`. */
@@ -42,7 +41,16 @@ class GrowingSpots implements SpotSink {
     this.held = emptySpots(Math.max(1, room));
   }
 
-  push(...[frame, xPx, yPx, sxPx, syPx, brightness, snr, flags]: Parameters<SpotSink['push']>): void {
+  push(
+    frame: number,
+    xPx: number,
+    yPx: number,
+    sxPx: number,
+    syPx: number,
+    brightness: number,
+    snr: number,
+    flags: number,
+  ): void {
     if (this.count === this.held.frame.length) this.grow();
     const { held, count } = this;
     held.frame[count] = frame;
@@ -124,9 +132,9 @@ export function sliceSpots(spots: Spots, from: number, to: number): Spots {
  * other, all little-endian.
  */
 export function encodeSpots(spots: Spots): Uint8Array {
-  const bytes = new Uint8Array(HEADER_BYTES + spots.count * BYTES_PER_SPOT);
+  const bytes = new Uint8Array(SPOTS_HEADER_BYTES + spots.count * BYTES_PER_SPOT);
   new Uint32Array(bytes.buffer, 0, 4).set([MAGIC, VERSION, spots.count, 0]);
-  let at = HEADER_BYTES;
+  let at = SPOTS_HEADER_BYTES;
   new Uint32Array(bytes.buffer, at, spots.count).set(spots.frame.subarray(0, spots.count));
   at += 4 * spots.count;
   for (const column of FLOAT_COLUMNS) {
@@ -148,18 +156,18 @@ export function readSpotsHeader(header: Uint8Array): number {
 
 /** @throws RangeError when the bytes are not spots of this version or end too early. */
 export function decodeSpots(bytes: Uint8Array): Spots {
-  if (bytes.length < HEADER_BYTES) {
-    throw new RangeError(`Got ${bytes.length} bytes when spots have a header of ${HEADER_BYTES}.`);
+  if (bytes.length < SPOTS_HEADER_BYTES) {
+    throw new RangeError(`Got ${bytes.length} bytes when spots have a header of ${SPOTS_HEADER_BYTES}.`);
   }
   // A copy starts at an address that 32-bit views may start at; the bytes received may not. `slice` is
   // not enough: that of Node's Buffer gives a view of the same memory.
   const aligned = new Uint8Array(bytes).buffer;
-  const count = readSpotsHeader(new Uint8Array(aligned, 0, HEADER_BYTES));
-  const expected = HEADER_BYTES + count * BYTES_PER_SPOT;
+  const count = readSpotsHeader(new Uint8Array(aligned, 0, SPOTS_HEADER_BYTES));
+  const expected = SPOTS_HEADER_BYTES + count * BYTES_PER_SPOT;
   if (bytes.length !== expected) {
     throw new RangeError(`Got ${bytes.length} bytes when ${count} spots have ${expected}.`);
   }
-  let at = HEADER_BYTES;
+  let at = SPOTS_HEADER_BYTES;
   const frame = new Uint32Array(aligned, at, count);
   const columns = FLOAT_COLUMNS.map(() => new Float32Array(aligned, (at += 4 * count), count));
   const [xPx, yPx, sxPx, syPx, brightness, snr] = columns;
@@ -175,7 +183,7 @@ export function decodeSpots(bytes: Uint8Array): Spots {
  */
 export function takeEncodedRuns(runs: Uint8Array[]): Spots {
   const countOf = (bytes: Uint8Array) =>
-    bytes.length < HEADER_BYTES ? 0 : new DataView(bytes.buffer, bytes.byteOffset).getUint32(8, true);
+    bytes.length < SPOTS_HEADER_BYTES ? 0 : new DataView(bytes.buffer, bytes.byteOffset).getUint32(8, true);
   const out = emptySpots(runs.reduce((sum, bytes) => sum + countOf(bytes), 0));
   let at = 0;
   for (let bytes = runs.shift(); bytes; bytes = runs.shift()) {

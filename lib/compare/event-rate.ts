@@ -1,9 +1,7 @@
 import { poissonInterval } from '@/tracking/poisson-interval';
 
-const LEVEL = 0.95;
-
 /**
- * Confirmed events per volume of the light sheet and time, 1/(m^3 s), with the interval of a Poisson count.
+ * Confirmed events per volume of the light sheet and time, 1/(m^3 s), with the 95 % interval of a Poisson count.
  * Null where the sheet's thickness is not known.
  */
 export function eventRate(
@@ -19,6 +17,6 @@ export function eventRate(
   const volumeTime =
     film.width * film.height * pixelSize_m ** 2 * (sheetThickness_m ?? 0) * film.frames * frameInterval_s;
   if (!(volumeTime > 0)) return null;
-  const { low, high } = poissonInterval(confirmed, LEVEL);
+  const { low, high } = poissonInterval(confirmed);
   return { value: confirmed / volumeTime, low: low / volumeTime, high: high / volumeTime };
 }

@@ -217,17 +217,14 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
     for (let k = 0; k < count; k++) size[k] = table.size[members[k]];
   };
 
-  const costOfSizes = (table: SpotTable, members: Int32Array, count: number): number => {
-    let cost = 0;
-    for (let k = 0; k < count; k++) cost += sizes.cost[table.size[members[k]]];
-    return cost;
-  };
-
-  /** Fits the members and one more as they were put; true when that is likelier than all before, and kept then. */
-  const attempt = (count: number): boolean => {
+  /**
+   * Fits the members and one more as they were put; true when that is likelier than all before, and kept then.
+   *
+   * @param moreUsual -ln of how rare sizes are that the attempt no longer needs.
+   */
+  const attempt = (count: number, moreUsual: number): boolean => {
     joint.run(count + 1, offsetSpreadE);
-    let likelihood = joint.logLikelihood();
-    for (let k = 0; k < count; k++) likelihood -= sizes.cost[size[k]];
+    const likelihood = joint.logLikelihood() + moreUsual;
     if (!(likelihood > best.likelihood && areApart(count + 1))) return false;
     best.likelihood = likelihood;
     bestX.set(joint.x);
@@ -254,7 +251,7 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
     joint.centreY[count] = split >= 0 && response < RESPONSE_TRIED ? table.y[members[split]] + splitY : peakY;
     joint.load(count + 1);
     joint.run(count, offsetSpreadE);
-    const before = joint.logLikelihood() - costOfSizes(table, members, count);
+    const before = joint.logLikelihood();
     let beside = 0;
     for (let k = 0; k < count; k++) {
       const near =
@@ -269,11 +266,12 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
       joint.x[count] = peakX;
       joint.y[count] = peakY;
       joint.n[count] = peakN;
-      found = attempt(count);
+      found = attempt(count, 0);
     }
     if (split >= 0) {
       startBeside(table, members, count);
       // What looked wide may be two of the usual size.
+      const moreUsual = sizes.cost[size[split]];
       size[split] = sizes.typical;
       joint.sigma[split] = sizes.sigmaPx[sizes.typical];
       joint.x[count] = joint.x[split] + splitX;
@@ -282,7 +280,7 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
       joint.y[split] -= splitY;
       joint.n[split] *= 0.5;
       joint.n[count] = joint.n[split];
-      found = attempt(count) || found;
+      found = attempt(count, moreUsual) || found;
     }
     if (found) addFound(table, members, count, response);
     paintAll(table, members, found ? count + 1 : count, 1);

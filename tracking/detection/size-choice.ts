@@ -26,8 +26,7 @@ export function createSizeChoice(
   if (sigmaPx.length === 1) return () => undefined;
 
   return (table, members, count, offsetSpreadE) => {
-    let best = joint.logLikelihood();
-    for (let k = 0; k < count; k++) best -= cost[table.size[members[k]]];
+    let likelihood = joint.logLikelihood();
     for (let k = 0; k < count; k++) {
       const i = members[k];
       for (const stride of STRIDES) {
@@ -36,9 +35,9 @@ export function createSizeChoice(
           start(table, members, count);
           joint.sigma[k] = sigmaPx[next];
           joint.run(count, offsetSpreadE);
-          const likelihood = joint.logLikelihood() - costWith(table, members, count, k, next);
-          if (!(likelihood > best + GAIN_LEAST)) break;
-          best = likelihood;
+          const changed = joint.logLikelihood();
+          if (!(changed - likelihood > cost[next] - cost[table.size[i]] + GAIN_LEAST)) break;
+          likelihood = changed;
           table.size[i] = next;
           store(table, members, count);
         }
@@ -49,10 +48,4 @@ export function createSizeChoice(
     joint.run(count, offsetSpreadE);
     store(table, members, count);
   };
-
-  function costWith(table: SpotTable, members: Int32Array, count: number, k: number, size: number): number {
-    let sum = cost[size];
-    for (let m = 0; m < count; m++) if (m !== k) sum += cost[table.size[members[m]]];
-    return sum;
-  }
 }

@@ -2,13 +2,11 @@ import { ANISOTROPY_ERROR, THICKNESS_ERROR, type EstimateContext, whyNotTold } f
 import { notUsable, type DensityResult } from './interval';
 import { widenForFewLines } from './line-spread';
 import { sumError } from './shared-motion';
-import { decoratedShare } from './sheet-geometry';
+import { decoratedShare, decoratedSharePower } from './sheet-geometry';
 import { lineDensityFromCrossings, spacingFromDensity } from './stereology';
 
 /** A sheet thicker than this part of the spacing is no plane that lines cross. */
 const THIN_PART = 0.3;
-/** Relative step of a derivative. */
-const STEP = 1e-3;
 
 /**
  * L = 2 P_A for isotropic lines (Saltykov 1945): distinct lines that cross the sheet per area, lines
@@ -48,11 +46,10 @@ export function crossingsEstimate(context: EstimateContext): DensityResult {
     const note = `The light sheet is ${part.toFixed(1)} times as thick as the lines are apart; crossings need less than ${THIN_PART}.`;
     return notUsable(method, note, filled);
   }
-  const perDensity = decoratedShare(usedPerLengthM * h * (1 + STEP)) / share;
-  const sharePower = Math.log(perDensity) / Math.log1p(STEP);
+  const byShare = decoratedSharePower(usedPerLengthM * h) * fellows.perLengthError;
   // Lines come as a Poisson process, each for the share of the time that it is seen.
   const lines = nearest.present.map((of) => of / nearest.linesPerFrame);
-  const error = Math.hypot(widenForFewLines(sumError(lines, []), lines), sharePower * fellows.perLengthError);
+  const error = Math.hypot(widenForFewLines(sumError(lines, []), lines), byShare);
   const thicker = decoratedShare(usedPerLengthM * h * (1 + THICKNESS_ERROR));
   return {
     method,

@@ -1,3 +1,4 @@
+import { SumsByTwoLines } from './by-two-lines';
 import type { LineGroups } from './line-groups';
 
 /** Pairs that move alike beyond those that move as one: by so many standard errors, and by such a part. */
@@ -17,8 +18,7 @@ export function linesBend(
   highPx: number,
 ): boolean {
   let [more, rigid] = [0, 0];
-  // All pairs of tracers of the same two lines say the same again.
-  const byLines = new Map<string, number>();
+  const byLines = new SumsByTwoLines(line);
   for (const m of pairs) {
     const distance = Math.hypot(m.dxPx, m.dyPx);
     if (distance < lowPx || distance >= highPx || !(m.asOne > 0)) continue;
@@ -28,11 +28,7 @@ export function linesBend(
     }
     const alike = (m.common * m.together) / m.asOne;
     more += alike;
-    const [a, b] = [line[m.trackA], line[m.trackB]];
-    const key = a < b ? `${a} ${b}` : `${b} ${a}`;
-    byLines.set(key, (byLines.get(key) ?? 0) + alike);
+    byLines.add(m, alike);
   }
-  let square = 0;
-  for (const of of byLines.values()) square += of * of;
-  return more > ERRORS_LEAST * Math.sqrt(square) && more > PART_LEAST * rigid;
+  return more > ERRORS_LEAST * byLines.error() && more > PART_LEAST * rigid;
 }

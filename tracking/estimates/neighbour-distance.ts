@@ -2,15 +2,13 @@ import { ANISOTROPY_ERROR, THICKNESS_ERROR, type EstimateContext, whyNotTold } f
 import { notUsable, type DensityResult } from './interval';
 import { widenForFewLines } from './line-spread';
 import { sumError } from './shared-motion';
-import { decoratedShare } from './sheet-geometry';
+import { decoratedShare, decoratedSharePower } from './sheet-geometry';
 import { lineDensityFromNeighbourDistance, neighbourDistance } from './stereology';
 
 /** Above this part of the spacing the thickness of the sheet matters more than a correction can mend. */
 const THIN_PART = 0.3;
 /** Added to ln L's error when the sheet is thicker than that. */
 const THICK_ERROR = 0.15;
-/** Relative step of a derivative. */
-const STEP = 1e-3;
 
 /**
  * L = 1 / (2 <r>^2) from the distance between neighbouring lines, one tracer standing for each,
@@ -53,16 +51,12 @@ export function neighbourDistanceEstimate(context: EstimateContext): DensityResu
     const note = `The light sheet is ${part.toFixed(1)} times as thick as the lines are apart: distances in its projection say nothing.`;
     return notUsable(method, note, filled);
   }
-  const perDensity = decoratedShare(usedPerLengthM * h * (1 + STEP)) / share;
-  const sharePower = Math.log(perDensity) / Math.log1p(STEP);
+  const byShare = decoratedSharePower(usedPerLengthM * h) * fellows.perLengthError;
   const ended = total(nearest.ended);
   const area = total(nearest.areaM2);
   // What each line adds to ln L beyond its share: ended distances over areas.
   const influence = nearest.ended.map((of, l) => of / ended - nearest.areaM2[l] / area);
-  const error = Math.hypot(
-    widenForFewLines(sumError(influence, nearest.neighbours), nearest.ended),
-    sharePower * fellows.perLengthError,
-  );
+  const error = Math.hypot(widenForFewLines(sumError(influence, nearest.neighbours), nearest.ended), byShare);
   const thicker = decoratedShare(usedPerLengthM * h * (1 + THICKNESS_ERROR));
   const thick = part > THIN_PART;
   return {

@@ -1,3 +1,4 @@
+import { SumsByTwoLines } from './by-two-lines';
 import type { PairMotion } from './pair-motion';
 
 /**
@@ -27,14 +28,7 @@ export function shareOnOneLine(
   }
   if (!(asOne > 0)) return { share: 0, pairs: 0, error: 0 };
   const share = Math.min(1, Math.max(0, together / asOne));
-  // All pairs of tracers of the same two lines say the same again.
-  const byLines = new Map<string, number>();
-  for (const [w, m] of near) {
-    const [a, b] = [line[m.trackA], line[m.trackB]];
-    const key = a < b ? `${a} ${b}` : `${b} ${a}`;
-    byLines.set(key, (byLines.get(key) ?? 0) + w * (m.together - share * m.asOne));
-  }
-  let square = 0;
-  for (const off of byLines.values()) square += off * off;
-  return { share, pairs: share * all, error: (all * Math.sqrt(square)) / asOne };
+  const byLines = new SumsByTwoLines(line);
+  for (const [weight, m] of near) byLines.add(m, weight * (m.together - share * m.asOne));
+  return { share, pairs: share * all, error: (all * byLines.error()) / asOne };
 }

@@ -1,3 +1,4 @@
+import { keyOfLines } from './by-two-lines';
 import type { LineGroups } from './line-groups';
 
 /**
@@ -22,16 +23,14 @@ export function sumError(
  * Pairs of lines, each once, that may be one: tracks of both come near each other and are too short or too
  * still to be told apart, and no other tracks of the two are.
  */
-export function perhapsOneLine({ line, pairs, untold }: LineGroups): [number, number][] {
-  const lines = line.reduce((most, of) => Math.max(most, of), -1) + 1;
-  const keyOf = (a: number, b: number) => Math.min(a, b) * lines + Math.max(a, b);
+export function perhapsOneLine({ line, lines, pairs, untold }: LineGroups): [number, number][] {
   const apart = new Set<number>();
-  for (const m of pairs) if (!m.rigid) apart.add(keyOf(line[m.trackA], line[m.trackB]));
+  for (const m of pairs) if (!m.rigid) apart.add(keyOfLines(line[m.trackA], line[m.trackB], lines));
   const perhaps = new Map<number, [number, number]>();
   for (const m of untold) {
     const [a, b] = [line[m.trackA], line[m.trackB]];
     if (a === b) continue;
-    const key = keyOf(a, b);
+    const key = keyOfLines(a, b, lines);
     if (!apart.has(key)) perhaps.set(key, [a, b]);
   }
   return [...perhaps.values()];

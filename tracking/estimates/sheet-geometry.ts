@@ -42,3 +42,10 @@ export function decoratedShare(tracersPerThickness: number): number {
   }
   return sum / STEPS;
 }
+
+/** d ln `decoratedShare` / d ln of its argument. */
+export function decoratedSharePower(tracersPerThickness: number): number {
+  let sum = 0;
+  for (let i = 0; i < STEPS; i++) sum += 2 * Math.exp((-tracersPerThickness * STEPS) / (i + 0.5));
+  return (tracersPerThickness * sum) / STEPS / decoratedShare(tracersPerThickness);
+}

@@ -49,47 +49,20 @@ export function findBadPixels(
     const off = sum[i] / pairs;
     const meanSquare = squares[i] / pairs;
     const stuck = meanSquare - off * off < stuckShare * expected;
-    if (
-      stuck ||
-      isHot(sum, i, off, offShare * offShare * expected, pairs, width, height) ||
-      isBlinking(squares, i, meanSquare - expected, blinkingShare * expected, expected, pairs, width, height)
-    ) {
+    const isHot =
+      off * off >= offShare * offShare * expected &&
+      neighbourMean(sum, i, width, height) / pairs / off < NEIGHBOUR_SHARE_MOST;
+    const excess = meanSquare - expected;
+    const isBlinking =
+      excess >= blinkingShare * expected &&
+      neighbourMean(squares, i, width, height) / pairs - expected < BLINKING_NEIGHBOUR_SHARE_MOST * excess;
+    if (stuck || isHot || isBlinking) {
       bad[i] = 1;
       count++;
     }
   }
   // Whole dark regions or a frozen recording are a property of the recording, not of its pixels.
   return count > pixels / BLOCK_PX ? new Uint8Array(pixels) : bad;
-}
-
-/** Whether a pixel stands out by `off` at least and its neighbours don't. */
-function isHot(
-  sum: Float32Array,
-  i: number,
-  off: number,
-  least: number,
-  pairs: number,
-  width: number,
-  height: number,
-): boolean {
-  if (off * off < least) return false;
-  return neighbourMean(sum, i, width, height) / pairs / off < NEIGHBOUR_SHARE_MOST;
-}
-
-/** Whether a pixel's mean square exceeds `expected` by `least` at least and its neighbours' doesn't. */
-function isBlinking(
-  squares: Float32Array,
-  i: number,
-  excess: number,
-  least: number,
-  expected: number,
-  pairs: number,
-  width: number,
-  height: number,
-): boolean {
-  if (excess < least) return false;
-  const around = neighbourMean(squares, i, width, height) / pairs - expected;
-  return around < BLINKING_NEIGHBOUR_SHARE_MOST * excess;
 }
 
 /** Lower tail of chi^2 with k degrees of freedom: (x / 2)^(k / 2) / Gamma(k / 2 + 1) for small x. */
@@ -103,15 +76,11 @@ function shareByChance(frames: number): number {
 
 function neighbourMean(values: Float32Array, at: number, width: number, height: number): number {
   const x = at % width;
-  const left = x > 0 ? 1 : 0;
-  const right = x < width - 1 ? 1 : 0;
-  const up = at >= width ? 1 : 0;
-  const down = at < width * (height - 1) ? 1 : 0;
-  const count = left + right + up + down;
   let sum = 0;
-  if (left === 1) sum += values[at - 1];
-  if (right === 1) sum += values[at + 1];
-  if (up === 1) sum += values[at - width];
-  if (down === 1) sum += values[at + width];
+  let count = 0;
+  if (x > 0) [sum, count] = [sum + values[at - 1], count + 1];
+  if (x < width - 1) [sum, count] = [sum + values[at + 1], count + 1];
+  if (at >= width) [sum, count] = [sum + values[at - width], count + 1];
+  if (at < width * (height - 1)) [sum, count] = [sum + values[at + width], count + 1];
   return count > 0 ? sum / count : 0;
 }

@@ -1,7 +1,6 @@
 import { DARK_VARIANCE_E2 } from '../detection/second-look';
-import { keepCompiled } from '../kernels/keep-compiled';
 import type { CountScale, FrameKernels, Kernels, Peaks } from '../kernels/kernels';
-import { electronScale, electronsOf } from '../kernels/noise-units';
+import { electronScale, electronsOf, type ElectronScale } from '../kernels/noise-units';
 import type { Frame, ImageModel } from '../types';
 import { blocksOfFrame } from './background-of-frame';
 
@@ -86,46 +85,61 @@ export function spotFrames(
   };
 
   const inElectrons = electronScale(scale);
-  const noiseOf = (images: FrameKernels, { counts }: Frame): Float32Array => {
-    const out = new Float32Array(width * height);
-    for (let i = 0; i < out.length; i++) {
-      if (!images.isUsable(i)) continue;
-      const bare = images.bareAt(i);
-      out[i] =
-        (electronsOf(counts[i], inElectrons) - bare) / Math.sqrt(bare + readVariance + DARK_VARIANCE_E2);
-    }
-    return out;
-  };
-
   const forSpots: SpotFrames['forSpots'] = (sigmaPx) => {
     const images = imagesFor(sigmaPx);
     let frame = frames[0];
-    return keepCompiled('spot finder', {
+    return {
       kernelSquares: images.kernel.squares,
       response: images.response,
       peaksOf: (index, level) => {
         frame = respond(images, index);
         return images.findPeaks(level);
       },
-      noiseOf: (index) => noiseOf(images, (frame = respond(images, index))),
-      bareAt: images.bareAt,
-      cut: (pixel, reachPx) => {
-        const side = 2 * reachPx + 1;
-        const electrons = new Float32Array(side * side);
-        const background = new Float32Array(side * side);
-        const usable = new Uint8Array(side * side);
-        for (let j = 0, to = 0; j < side; j++) {
-          const row = pixel + (j - reachPx) * width - reachPx;
-          for (let at = row; at < row + side; at++, to++) {
-            background[to] = images.bareAt(at);
-            if (!images.isUsable(at)) continue;
-            usable[to] = 1;
-            electrons[to] = electronsOf(frame.counts[at], inElectrons);
-          }
-        }
-        return { side, electrons, background, usable };
+      noiseOf: (index) => {
+        frame = respond(images, index);
+        return noiseImage(images, frame, inElectrons, readVariance);
       },
-    });
+      bareAt: images.bareAt,
+      cut: (pixel, reachPx) => cutWindow(images, frame, inElectrons, pixel, reachPx),
+    };
   };
   return { width, height, count, readVariance, forSpots };
+}
+
+function noiseImage(
+  images: FrameKernels,
+  { counts }: Frame,
+  scale: ElectronScale,
+  readVariance: number,
+): Float32Array {
+  const out = new Float32Array(counts.length);
+  for (let i = 0; i < out.length; i++) {
+    if (!images.isUsable(i)) continue;
+    const bare = images.bareAt(i);
+    out[i] = (electronsOf(counts[i], scale) - bare) / Math.sqrt(bare + readVariance + DARK_VARIANCE_E2);
+  }
+  return out;
+}
+
+function cutWindow(
+  images: FrameKernels,
+  { width, counts }: Frame,
+  scale: ElectronScale,
+  pixel: number,
+  reachPx: number,
+): SpotWindow {
+  const side = 2 * reachPx + 1;
+  const electrons = new Float32Array(side * side);
+  const background = new Float32Array(side * side);
+  const usable = new Uint8Array(side * side);
+  for (let j = 0, to = 0; j < side; j++) {
+    const row = pixel + (j - reachPx) * width - reachPx;
+    for (let at = row; at < row + side; at++, to++) {
+      background[to] = images.bareAt(at);
+      if (!images.isUsable(at)) continue;
+      usable[to] = 1;
+      electrons[to] = electronsOf(counts[at], scale);
+    }
+  }
+  return { side, electrons, background, usable };
 }

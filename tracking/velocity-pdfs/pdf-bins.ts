@@ -1,31 +1,36 @@
-import { sortedQuantile } from '../quantile';
-
 /** Bins are equal to this many robust widths around the median and then grow, so that tails fill them. */
 const CORE_WIDTHS = 4;
 const GROWTH = 1.2;
 const BINS_MAX = 400;
 
-/** Of the sorted samples only the ends and these quantiles are looked at. */
-export const EDGE_QUANTILES = [0.25, 0.5, 0.75] as const;
+/** What bins follow from: how many samples there are, and where they lie, m/s. */
+export interface SampleSpread {
+  samples: number;
+  least: number;
+  lowerQuartile: number;
+  median: number;
+  upperQuartile: number;
+  most: number;
+}
 
 /**
  * Bin edges for samples of one velocity component, m/s: Freedman & Diaconis (1981) widths in the
  * core, but never narrower than the localization noise, growing by a fifth per bin in the tails.
  * Edges are multiples of the core width there, and every sample lies in a bin.
  *
- * @param sorted all samples, ascending, at least one.
+ * @param spread of at least one sample.
  * @param noiseMS standard deviation that localization alone gives; 0 or NaN where unknown.
  */
-export function pdfEdges(sorted: ArrayLike<number>, noiseMS: number): number[] {
-  const n = sorted.length;
-  const least = sorted[0];
-  const most = sorted[n - 1];
-  const quartiles = sortedQuantile(sorted, 0.75) - sortedQuantile(sorted, 0.25);
+export function pdfEdges(
+  { samples, least, lowerQuartile, median, upperQuartile, most }: SampleSpread,
+  noiseMS: number,
+): number[] {
+  const quartiles = upperQuartile - lowerQuartile;
   const range = most - least;
-  const byRule = (2 * quartiles) / Math.cbrt(n);
+  const byRule = (2 * quartiles) / Math.cbrt(samples);
   const wanted = Math.max(byRule, noiseMS > 0 ? noiseMS : 0, range / BINS_MAX);
   const width = wanted > 0 ? wanted : Math.max(Math.abs(least), 1e-6) / 10;
-  const middle = width * Math.round(sortedQuantile(sorted, 0.5) / width);
+  const middle = width * Math.round(median / width);
   const coreBins = Math.max(2, Math.ceil((CORE_WIDTHS * (quartiles / 1.349)) / width));
   const outward = (reach: number): number[] => {
     const edges: number[] = [];

@@ -1,4 +1,4 @@
-import { orderStatistics } from '../order-statistics';
+import type { EachValue } from '../order-statistics';
 import { createRandom, mixSeed } from '../random';
 import { packTracks } from '../resampling/packs';
 import { POPULATIONS, type Conditions, type Recipe, type Tracks } from '../types';
@@ -6,7 +6,8 @@ import type { PdfPopulation, VelocityComponent, VelocityPdf } from '../velocity-
 import { unitFlow } from '../velocities';
 import { ComponentReader, countSamples, someNoise } from './component-samples';
 import { histogram } from './histogram';
-import { EDGE_QUANTILES, pdfEdges } from './pdf-bins';
+import { pdfEdges } from './pdf-bins';
+import { sampleSpread } from './sample-spread';
 
 const PDF_POPULATIONS: readonly PdfPopulation[] = [...POPULATIONS, 'all'];
 /** Noise is looked up on about this many samples to set the width of bins. */
@@ -41,7 +42,7 @@ export function velocityPdfs(
       const samples = countSamples(reader, tracks.count);
       if (samples === 0) return;
       const noise = typicalNoise(someNoise(reader, tracks.count, samples, NOISE_SAMPLES));
-      const edges = pdfEdges(sortedWhereAsked(reader, tracks.count, samples), noise);
+      const edges = pdfEdges(sampleSpread(eachSample(reader, tracks.count), samples), noise);
       PDF_POPULATIONS.forEach((name, code) => {
         const takes = (track: number) => name === 'all' || population[track] === code;
         const pdf = histogram({ tracks: tracks.count, takes, reader, edges, ...packs });
@@ -52,19 +53,14 @@ export function velocityPdfs(
   return pdfs;
 }
 
-/** All samples sorted, of which only those are there that bins are made from. */
-function sortedWhereAsked(reader: ComponentReader, tracks: number, samples: number): ArrayLike<number> {
-  const last = samples - 1;
-  const near = EDGE_QUANTILES.map((p) => Math.floor(last * p));
-  const places = [...new Set([0, last, ...near, ...near.map((place) => Math.min(last, place + 1))])];
-  const found = orderStatistics((visit) => {
+const eachSample =
+  (reader: ComponentReader, tracks: number): EachValue =>
+  (visit) => {
     for (let i = 0; i < tracks; i++) {
       const n = reader.read(i);
       for (let k = 0; k < n; k++) visit(reader.values[k]);
     }
-  }, places);
-  return Object.assign({ length: samples }, Object.fromEntries(places.map((place, k) => [place, found[k]])));
-}
+  };
 
 /** Median of the standard deviations. */
 function typicalNoise(variances: number[]): number {

@@ -1,5 +1,4 @@
 import { describe, expect, it } from 'vitest';
-import { poissonInterval } from '@/tracking/poisson-interval';
 import { createRandom } from '@/tracking/random';
 import { poolPdfs, type RunPdf } from '@/tracking/velocity-pdfs/pool-pdfs';
 import { expectWithin } from '../../helpers/expect-within';
@@ -65,24 +64,5 @@ describe('pooling distributions of runs', () => {
       return run([0, 1, 2], [p, 1 - p], 1.959964 * 0.04);
     });
     expectWithin(poolPdfs(runs).between[0]!, 0.03, { abs: 0.006 });
-  });
-});
-
-describe('events of a Poisson process', () => {
-  // Garwood (1936), as in common tables of exact 95 % limits.
-  it.each([
-    [0, 0, 3.6889],
-    [1, 0.0253, 5.5716],
-    [5, 1.6235, 11.6683],
-    [10, 4.7954, 18.3904],
-    [100, 81.3636, 121.6273],
-  ])('%i seen: %f to %f', (count, low, high) => {
-    // prettier-ignore
-    const interval = poissonInterval(count, 0.95);
-    expectWithin(interval.low, low, { abs: 1e-3 });
-    expectWithin(interval.high, high, { abs: 1e-3 });
-  });
-  it('refuses what is no count', () => {
-    expect(() => poissonInterval(-1, 0.95)).toThrow(/whole number/);
   });
 });

@@ -1,4 +1,4 @@
-/** Numbers per block that `addBlockSums` writes. */
+/** Numbers per block that `sumBlock` writes. */
 const SUMS = 8;
 
 /**
