@@ -23,11 +23,11 @@ export default defineConfig({
       {
         extends: true,
         test: {
-          // All of these talk to one running product, so they take turns, and only after the others.
+          // These share one running product, each file in laboratories of its own; they come after the others.
           name: 'server',
           include: needsServer,
           globalSetup: ['tests/helpers/start-shared-server.ts'],
-          fileParallelism: false,
+          maxWorkers: 2,
           testTimeout: 120_000,
           sequence: { groupOrder: 1 },
         },

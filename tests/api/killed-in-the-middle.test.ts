@@ -6,12 +6,14 @@ import { closeDatabase } from '@/models/database';
 import { uploadStack } from '../helpers/analysed-recording';
 import { ApiScript, breakUpload, createUpload, patchUpload, uploadOffset } from '../helpers/api-client';
 import { patiently } from '../helpers/patiently';
-import { processesOf, sharedServer } from '../helpers/server';
+import { processesOf } from '../helpers/server';
 import { smallConditions, writeSmallStack } from '../helpers/small-stack';
+import { startServer } from '../helpers/start-server';
 import { makeTestLab } from '../helpers/test-lab';
 import { until } from '../helpers/until';
 
-const server = sharedServer();
+/** The one that other tests share must not be killed. */
+let server: Awaited<ReturnType<typeof startServer>>;
 const SLOW = { withinMs: 120_000, everyMs: 100 };
 
 async function kill(name: string): Promise<void> {
@@ -41,6 +43,7 @@ describe('processes killed in the middle of their work', () => {
   const tracks = (id: string) => script.text(`/api/v1/analyses/${id}/tracks.csv?corrections=none`);
 
   beforeAll(async () => {
+    server = await startServer('killed-in-the-middle');
     const lab = await makeTestLab(server.databaseUrl);
     script = new ApiScript(server.baseUrl, lab.people.experimentalist.token);
     ({ stack } = await writeSmallStack({ frames: 64 }));
@@ -52,7 +55,10 @@ describe('processes killed in the middle of their work', () => {
     expect((await finished(id)).state).toBe('done');
     calm = await tracks(id);
   }, 180_000);
-  afterAll(closeDatabase);
+  afterAll(async () => {
+    await closeDatabase();
+    await server?.stop();
+  });
 
   it('an upload goes on after its web server was killed, and gives the same tracks', async () => {
     const bytes = new Uint8Array(await readFile(stack));

@@ -1,10 +1,16 @@
 import { spawn } from 'node:child_process';
 import { join } from 'node:path';
-import { describe, expect, it } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { waitUntil } from '@/scripts/platform/processes.mjs';
-import { processesOf, sharedServer } from '../helpers/server';
+import { processesOf } from '../helpers/server';
+import { startServer } from '../helpers/start-server';
 
-const server = sharedServer();
+/** The one that other tests share must not be killed. */
+let server: Awaited<ReturnType<typeof startServer>>;
+beforeAll(async () => {
+  server = await startServer('supervised');
+});
+afterAll(() => server?.stop());
 
 const isHealthy = () =>
   fetch(`${server.baseUrl}/api/health`).then(
