@@ -29,6 +29,8 @@ interface Rule {
 }
 
 const everyone = { experimentalist: 'yes', annotator: 'yes', analyst: 'yes', principal_investigator: 'yes', lab_administrator: 'yes' } as const; // prettier-ignore
+const analysts = { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' } as const;
+const ownOfAnalysts = { experimentalist: 'own', analyst: 'own', principal_investigator: 'yes' } as const;
 const scientists = { experimentalist: 'yes', annotator: 'yes', analyst: 'yes', principal_investigator: 'yes' } as const; // prettier-ignore
 
 /**
@@ -40,19 +42,10 @@ export const ACTIONS = {
   // An administrator sees that things exist and how large they are, not what is in them.
   'list-records': { scope: 'read', grants: everyone },
   'see-data': { scope: 'read', grants: scientists },
-  compare: {
-    scope: 'read',
-    grants: { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' },
-  },
+  compare: { scope: 'read', grants: analysts },
   // Selections are everybody's who compares; one changes one's own.
-  'save-selection': {
-    scope: 'write',
-    grants: { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' },
-  },
-  'edit-selection': {
-    scope: 'write',
-    grants: { experimentalist: 'own', analyst: 'own', principal_investigator: 'yes' },
-  },
+  'save-selection': { scope: 'write', grants: analysts },
+  'edit-selection': { scope: 'write', grants: ownOfAnalysts },
   'leave-out-run': { scope: 'write', grants: { analyst: 'yes', principal_investigator: 'yes' } },
   'create-campaign': { scope: 'write', grants: { experimentalist: 'yes', principal_investigator: 'yes' } },
   'edit-campaign': { scope: 'write', grants: { experimentalist: 'own', principal_investigator: 'yes' } },
@@ -69,14 +62,8 @@ export const ACTIONS = {
     grants: { experimentalist: 'own', principal_investigator: 'yes', lab_administrator: 'yes' },
   },
   'edit-recording': { scope: 'write', grants: { experimentalist: 'own', principal_investigator: 'yes' } },
-  'try-recipe': {
-    scope: 'write',
-    grants: { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' },
-  },
-  'start-analysis': {
-    scope: 'write',
-    grants: { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' },
-  },
+  'try-recipe': { scope: 'write', grants: analysts },
+  'start-analysis': { scope: 'write', grants: analysts },
   'stop-analysis': {
     scope: 'write',
     grants: {
@@ -86,45 +73,24 @@ export const ACTIONS = {
       lab_administrator: 'yes',
     },
   },
-  'make-rehearsal': {
-    scope: 'write',
-    grants: { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' },
-  },
-  'remove-rehearsal': {
-    scope: 'write',
-    grants: { experimentalist: 'own', analyst: 'own', principal_investigator: 'yes' },
-  },
+  'make-rehearsal': { scope: 'write', grants: analysts },
+  'remove-rehearsal': { scope: 'write', grants: ownOfAnalysts },
   'correct-tracks': {
     scope: 'review',
     grants: { experimentalist: 'yes', annotator: 'yes', principal_investigator: 'yes' },
   },
   // What is signed off can't be changed by anybody, the principal investigator included.
   'sign-off': { scope: 'review', grants: { principal_investigator: 'yes' } },
-  'save-recipe': {
-    scope: 'write',
-    grants: { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' },
-  },
-  'download-tables': {
-    scope: 'export',
-    grants: { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' },
-  },
+  'save-recipe': { scope: 'write', grants: analysts },
+  'download-tables': { scope: 'export', grants: analysts },
   // What waits to be judged, by whom, and how well readers agree.
   'see-review': { scope: 'read', grants: scientists },
   review: { scope: 'review', grants: { annotator: 'yes' } },
   settle: { scope: 'review', grants: { principal_investigator: 'yes' } },
   'assign-review': { scope: 'write', grants: { experimentalist: 'yes', principal_investigator: 'yes' } },
-  'see-exports': {
-    scope: 'export',
-    grants: { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' },
-  },
-  export: {
-    scope: 'export',
-    grants: { experimentalist: 'yes', analyst: 'yes', principal_investigator: 'yes' },
-  },
-  'stop-export': {
-    scope: 'export',
-    grants: { experimentalist: 'own', analyst: 'own', principal_investigator: 'yes' },
-  },
+  'see-exports': { scope: 'export', grants: analysts },
+  export: { scope: 'export', grants: analysts },
+  'stop-export': { scope: 'export', grants: ownOfAnalysts },
   'see-queue': { scope: 'read', grants: { principal_investigator: 'yes', lab_administrator: 'yes' } },
   'see-storage': { scope: 'read', grants: { principal_investigator: 'yes', lab_administrator: 'yes' } },
   'see-people': { scope: 'read', grants: { principal_investigator: 'yes', lab_administrator: 'yes' } },

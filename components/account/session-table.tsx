@@ -1,9 +1,9 @@
 'use client';
 
 import { useQuery, useQueryClient } from '@tanstack/react-query';
-import { useState } from 'react';
 import { Answer } from '@/components/data/answer';
 import { api } from '@/components/data/api-client';
+import { useAct } from '@/components/data/use-act';
 import { Button } from '@/components/ui/button';
 import { Moment } from '@/components/ui/moment';
 import { EmptyState, ErrorState } from '@/components/ui/page-states';
@@ -21,19 +21,10 @@ export function SessionTable({ source }: { source: string }) {
     queryKey: ['sessions', source],
     queryFn: ({ signal }) => api<ListView<SessionView>>(source, { signal }),
   });
-  const [ending, setEnding] = useState<string | null>(null);
-  const [problem, setProblem] = useState<string | null>(null);
+  const { busy: ending, problem, act } = useAct();
   async function end(id: string) {
-    setEnding(id);
-    setProblem(null);
-    try {
-      await api(`${source}/${id}`, { method: 'DELETE' });
-    } catch (error) {
-      setProblem(error instanceof Error ? error.message : 'That did not work.');
-    } finally {
-      setEnding(null);
-      await client.invalidateQueries({ queryKey: ['sessions', source] });
-    }
+    await act(() => api(`${source}/${id}`, { method: 'DELETE' }), id);
+    await client.invalidateQueries({ queryKey: ['sessions', source] });
   }
   return (
     <div className="w-full pt-1">

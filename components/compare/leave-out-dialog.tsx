@@ -2,7 +2,8 @@
 
 import { useQueryClient } from '@tanstack/react-query';
 import { useState } from 'react';
-import { api, ApiError } from '@/components/data/api-client';
+import { api } from '@/components/data/api-client';
+import { useAct } from '@/components/data/use-act';
 import { Button } from '@/components/ui/button';
 import { Dialog } from '@/components/ui/dialog';
 import { TextArea } from '@/components/ui/field';
@@ -12,22 +13,13 @@ import type { ComparedRun } from '@/lib/views/compare-view';
 export function LeaveOutDialog({ run, onClose }: { run: ComparedRun; onClose: () => void }) {
   const client = useQueryClient();
   const [reason, setReason] = useState('');
-  const [busy, setBusy] = useState(false);
-  const [problem, setProblem] = useState<string | null>(null);
+  const { busy, problem, act } = useAct();
   const { exclusion } = run;
-  async function act() {
-    setBusy(true);
-    setProblem(null);
-    try {
-      const path = `/api/v1/runs/${run.runId}/exclusion`;
-      await (exclusion ? api(path, { method: 'DELETE' }) : api(path, { method: 'PUT', body: { reason } }));
-      await client.invalidateQueries({ queryKey: ['compare'] });
-      onClose();
-    } catch (error) {
-      setProblem(error instanceof ApiError ? (error.errors[0]?.message ?? error.message) : 'That did not work.'); // prettier-ignore
-    } finally {
-      setBusy(false);
-    }
+  async function change() {
+    const path = `/api/v1/runs/${run.runId}/exclusion`;
+    await (exclusion ? api(path, { method: 'DELETE' }) : api(path, { method: 'PUT', body: { reason } }));
+    await client.invalidateQueries({ queryKey: ['compare'] });
+    onClose();
   }
   return (
     <Dialog
@@ -37,7 +29,7 @@ export function LeaveOutDialog({ run, onClose }: { run: ComparedRun; onClose: ()
       actions={
         <>
           <Button onClick={onClose}>{exclusion ? 'Leave it out' : 'Keep it in'}</Button>
-          <Button kind="main" busy={busy} onClick={() => void act()}>
+          <Button kind="main" busy={busy !== null} onClick={() => void act(change)}>
             {exclusion ? 'Take it in again' : 'Leave it out'}
           </Button>
         </>

@@ -3,6 +3,7 @@
 import { useQueryClient } from '@tanstack/react-query';
 import { useState } from 'react';
 import { ApiError, api } from '@/components/data/api-client';
+import { useAct } from '@/components/data/use-act';
 import { analysisPath } from '@/components/data/use-analysis';
 import { Button } from '@/components/ui/button';
 import { ConfirmDialog } from '@/components/ui/dialog';
@@ -34,8 +35,7 @@ export function CarrySection({ analysis, reason }: CarrySectionProps) {
   const others = useOtherCorrected(analysis, true);
   const [asked, setAsked] = useState<Asked | null>(null);
   const [done, setDone] = useState<Asked | null>(null);
-  const [busy, setBusy] = useState<string | null>(null);
-  const [problem, setProblem] = useState<string | null>(null);
+  const { busy, problem, act: attempt } = useAct();
   const path = `${analysisPath(analysis.id)}/corrections`;
 
   async function carry(from: AnalysisView, preview: boolean, revision: number): Promise<CarryReport> {
@@ -47,19 +47,12 @@ export function CarrySection({ analysis, reason }: CarrySectionProps) {
       ...key,
     });
   }
-  async function ask(from: AnalysisView) {
-    setBusy(from.id);
-    setProblem(null);
-    setDone(null);
-    try {
+  const ask = (from: AnalysisView) =>
+    attempt(async () => {
+      setDone(null);
       const { revision } = await api<CorrectionList>(`${path}?limit=1`);
       setAsked({ from, report: await carry(from, true, revision) });
-    } catch (error) {
-      setProblem(error instanceof Error ? error.message : 'That did not work. Try again.');
-    } finally {
-      setBusy(null);
-    }
-  }
+    }, from.id);
   async function act() {
     const { from, report } = asked!;
     try {

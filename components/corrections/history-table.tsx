@@ -4,6 +4,7 @@ import { useQuery, useQueryClient } from '@tanstack/react-query';
 import { useState } from 'react';
 import { Answer } from '@/components/data/answer';
 import { api } from '@/components/data/api-client';
+import { useAct } from '@/components/data/use-act';
 import { analysisPath } from '@/components/data/use-analysis';
 import { Button } from '@/components/ui/button';
 import { ConfirmDialog } from '@/components/ui/dialog';
@@ -30,8 +31,7 @@ export function HistoryTable({ analysisId, reason }: HistoryTableProps) {
   const key = ['corrections', analysisId];
   const [shown, setShown] = useState(PAGE_MOST);
   const [restoring, setRestoring] = useState<number | null>(null);
-  const [problem, setProblem] = useState<string | null>(null);
-  const [busy, setBusy] = useState<string | null>(null);
+  const { busy, problem, act } = useAct();
   const query = useQuery({
     queryKey: [...key, shown],
     queryFn: ({ signal }) => readLog(path, shown, signal),
@@ -43,23 +43,20 @@ export function HistoryTable({ analysisId, reason }: HistoryTableProps) {
   };
 
   async function takeBack({ id }: CorrectionView) {
-    setBusy(id);
-    setProblem(null);
-    try {
-      const body = { kind: 'undo', of: id };
-      const revision = query.data?.revision;
-      await api<CorrectionsStored>(path, {
-        method: 'POST',
-        body,
-        revision,
-        idempotencyKey: crypto.randomUUID(),
-      });
-    } catch (error) {
-      setProblem(error instanceof Error ? error.message : 'That did not work. Try again.');
-    } finally {
-      await changed();
-      setBusy(null);
-    }
+    const body = { kind: 'undo', of: id };
+    const revision = query.data?.revision;
+    await act(async () => {
+      try {
+        await api<CorrectionsStored>(path, {
+          method: 'POST',
+          body,
+          revision,
+          idempotencyKey: crypto.randomUUID(),
+        });
+      } finally {
+        await changed();
+      }
+    }, id);
   }
   async function restore() {
     const body = { revision: restoring };

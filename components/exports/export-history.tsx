@@ -1,8 +1,8 @@
 'use client';
 
-import { useState } from 'react';
 import { Answer } from '@/components/data/answer';
 import { api } from '@/components/data/api-client';
+import { useAct } from '@/components/data/use-act';
 import { useList } from '@/components/lists/use-list';
 import { Button } from '@/components/ui/button';
 import { Moment } from '@/components/ui/moment';
@@ -43,16 +43,12 @@ const STAGE_WORDS: Record<ExportView['stage'], string> = {
 /** Packages that were asked for, newest first, with their progress and their files. */
 export function ExportHistory({ viewer }: { viewer: { id: string; mayStopAll: boolean } }) {
   const list = useList<ExportView>('/api/v1/exports', SHAPE, REFRESH_MS);
-  const [problem, setProblem] = useState<string | null>(null);
-  async function stop(id: string) {
-    setProblem(null);
-    try {
+  const { problem, act } = useAct();
+  const stop = (id: string) =>
+    act(async () => {
       await api<ExportView>(`/api/v1/exports/${id}/stop`, { method: 'POST' });
       await list.query.refetch();
-    } catch (error) {
-      setProblem(error instanceof Error ? error.message : 'That did not work.');
-    }
-  }
+    });
   return (
     <Section title="Packages">
       {problem ? <ErrorState live what={problem} /> : null}

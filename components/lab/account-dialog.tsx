@@ -4,6 +4,7 @@ import { useQueryClient } from '@tanstack/react-query';
 import { useState } from 'react';
 import { SessionTable } from '@/components/account/session-table';
 import { api } from '@/components/data/api-client';
+import { useAct } from '@/components/data/use-act';
 import { Button } from '@/components/ui/button';
 import { Dialog } from '@/components/ui/dialog';
 import { ErrorState } from '@/components/ui/page-states';
@@ -19,23 +20,15 @@ const DONE: Record<Act, string> = {
 /** Help with a member's account: neither act shows or sets a password. */
 export function AccountDialog({ member, onClose }: { member: MemberView; onClose: () => void }) {
   const client = useQueryClient();
-  const [busy, setBusy] = useState<Act | null>(null);
+  const { busy, problem, act } = useAct();
   const [done, setDone] = useState<Act | null>(null);
-  const [problem, setProblem] = useState<string | null>(null);
-  async function act(which: Act) {
-    setBusy(which);
-    setProblem(null);
-    setDone(null);
-    try {
+  const help = (which: Act) =>
+    act(async () => {
+      setDone(null);
       await api(`/api/v1/people/${member.id}/${which}`, { method: 'POST' });
       setDone(which);
       await client.invalidateQueries({ queryKey: ['sessions'] });
-    } catch (error) {
-      setProblem(error instanceof Error ? error.message : 'That did not work.');
-    } finally {
-      setBusy(null);
-    }
-  }
+    }, which);
   return (
     <Dialog
       open
@@ -50,7 +43,7 @@ export function AccountDialog({ member, onClose }: { member: MemberView; onClose
       <div className="flex flex-col items-start gap-2 pt-1">
         <p>A lost device, or a place left signed in: end that session, or all of them. Tokens stay.</p>
         <SessionTable source={`/api/v1/people/${member.id}/sessions`} />
-        <Button busy={busy === 'sessions-end'} onClick={() => void act('sessions-end')}>
+        <Button busy={busy === 'sessions-end'} onClick={() => void help('sessions-end')}>
           End their sessions
         </Button>
         <p className="pt-3">
@@ -58,7 +51,7 @@ export function AccountDialog({ member, onClose }: { member: MemberView; onClose
           <span className="[overflow-wrap:anywhere]">{member.person.email}</span> by mail, with which they
           choose a new one.
         </p>
-        <Button busy={busy === 'password-reset'} onClick={() => void act('password-reset')}>
+        <Button busy={busy === 'password-reset'} onClick={() => void help('password-reset')}>
           Mail them a link
         </Button>
         <div role="status" className="min-h-5 pt-1">

@@ -2,9 +2,9 @@
 
 import { useQuery, useQueryClient } from '@tanstack/react-query';
 import Link from 'next/link';
-import { useState } from 'react';
 import { Answer } from '@/components/data/answer';
 import { api } from '@/components/data/api-client';
+import { useAct } from '@/components/data/use-act';
 import { useList } from '@/components/lists/use-list';
 import { Button } from '@/components/ui/button';
 import { Moment } from '@/components/ui/moment';
@@ -29,8 +29,7 @@ const BEADS: Record<FileCheckView['state'], BeadState> = {
 /** What the checks of stored files have seen; the administrator can ask for one now. */
 export function FileChecks({ mayAsk, initial }: { mayAsk: boolean; initial: StorageView }) {
   const client = useQueryClient();
-  const [problem, setProblem] = useState<string | null>(null);
-  const [busy, setBusy] = useState(false);
+  const { busy, problem, act } = useAct();
   const list = useList<FileCheckView>('/api/v1/file-checks', SHAPE, REFRESH_MS);
   const storage = useQuery({
     queryKey: ['storage'],
@@ -40,15 +39,7 @@ export function FileChecks({ mayAsk, initial }: { mayAsk: boolean; initial: Stor
   });
   const { checks } = storage.data;
   async function ask() {
-    setBusy(true);
-    setProblem(null);
-    try {
-      client.setQueryData(['storage'], await api<StorageView>('/api/v1/file-checks', { method: 'POST' }));
-    } catch (error) {
-      setProblem(error instanceof Error ? error.message : 'That did not work.');
-    } finally {
-      setBusy(false);
-    }
+    client.setQueryData(['storage'], await api<StorageView>('/api/v1/file-checks', { method: 'POST' }));
   }
   return (
     <Section
@@ -60,7 +51,7 @@ export function FileChecks({ mayAsk, initial }: { mayAsk: boolean; initial: Stor
       }
       tools={
         mayAsk ? (
-          <Button busy={busy || checks.underWay} onClick={() => void ask()}>
+          <Button busy={busy !== null || checks.underWay} onClick={() => void act(ask)}>
             {checks.underWay ? 'Checking' : 'Check now'}
           </Button>
         ) : null

@@ -2,6 +2,7 @@
 
 import { useState } from 'react';
 import { api } from '@/components/data/api-client';
+import { useAct } from '@/components/data/use-act';
 import { Button } from '@/components/ui/button';
 import { Dialog } from '@/components/ui/dialog';
 import { ErrorState } from '@/components/ui/page-states';
@@ -18,24 +19,11 @@ interface RolesDialogProps {
 /** Gives a member other roles. */
 export function RolesDialog({ member, onClose, onDone }: RolesDialogProps) {
   const [roles, setRoles] = useState<readonly Role[]>(member.roles);
-  const [problem, setProblem] = useState<string | null>(null);
-  const [busy, setBusy] = useState(false);
+  const { busy, problem, act } = useAct();
   async function save() {
-    setBusy(true);
-    setProblem(null);
-    try {
-      await api(`/api/v1/people/${member.id}`, {
-        method: 'PATCH',
-        body: { roles },
-        revision: member.revision,
-      });
-      await onDone();
-      onClose();
-    } catch (error) {
-      setProblem(error instanceof Error ? error.message : 'That did not work.');
-    } finally {
-      setBusy(false);
-    }
+    await api(`/api/v1/people/${member.id}`, { method: 'PATCH', body: { roles }, revision: member.revision });
+    await onDone();
+    onClose();
   }
   return (
     <Dialog
@@ -49,9 +37,9 @@ export function RolesDialog({ member, onClose, onDone }: RolesDialogProps) {
           </Button>
           <Button
             kind="main"
-            busy={busy}
+            busy={busy !== null}
             reason={roles.length === 0 ? 'At least one role.' : null}
-            onClick={() => void save()}
+            onClick={() => void act(save)}
           >
             Save roles
           </Button>

@@ -4,6 +4,7 @@ import { useQueryClient } from '@tanstack/react-query';
 import { useState } from 'react';
 import { Answer } from '@/components/data/answer';
 import { api } from '@/components/data/api-client';
+import { useAct } from '@/components/data/use-act';
 import { useList } from '@/components/lists/use-list';
 import { Button } from '@/components/ui/button';
 import { Checkbox } from '@/components/ui/choice';
@@ -121,24 +122,13 @@ interface TokenDialogProps {
 function TokenDialog({ scopes, onClose, onMade }: TokenDialogProps) {
   const [name, setName] = useState('');
   const [chosen, setChosen] = useState<readonly Scope[]>(scopes);
-  const [problem, setProblem] = useState<string | null>(null);
   const [token, setToken] = useState<string | null>(null);
-  const [busy, setBusy] = useState(false);
+  const { busy, problem, act } = useAct();
   async function make() {
-    setBusy(true);
-    setProblem(null);
-    try {
-      const made = await api<{ token: string }>('/api/v1/tokens', {
-        method: 'POST',
-        body: { name, scopes: chosen },
-      });
-      setToken(made.token);
-      onMade();
-    } catch (error) {
-      setProblem(error instanceof Error ? error.message : 'That did not work.');
-    } finally {
-      setBusy(false);
-    }
+    const body = { name, scopes: chosen };
+    const made = await api<{ token: string }>('/api/v1/tokens', { method: 'POST', body });
+    setToken(made.token);
+    onMade();
   }
   if (token) {
     return (
@@ -174,9 +164,9 @@ function TokenDialog({ scopes, onClose, onMade }: TokenDialogProps) {
           </Button>
           <Button
             kind="main"
-            busy={busy}
+            busy={busy !== null}
             reason={chosen.length === 0 ? 'Choose what it may do.' : null}
-            onClick={() => void make()}
+            onClick={() => void act(make)}
           >
             Make token
           </Button>

@@ -74,7 +74,6 @@ function Sitting({ queue, ...props }: ReviewDeskProps & { queue: ReviewQueueView
   const { outbox, state } = useOutbox(owner);
   // How many verdicts were given on a candidate since it was fetched: the revision grows by so many.
   const given = useRef(new WeakMap<object, number>());
-  const reasonField = useRef<HTMLInputElement>(null);
   const noteField = useRef<HTMLTextAreaElement>(null);
   const id = way.candidateAt(sitting);
   const { loaded, failure, retry } = useCandidate(id, way.comingUp(sitting, 8));
@@ -115,7 +114,6 @@ function Sitting({ queue, ...props }: ReviewDeskProps & { queue: ReviewQueueView
 
   function writeReason() {
     setDraft({ ...draft, inWords: true, reason: '' });
-    requestAnimationFrame(() => reasonField.current?.focus());
   }
 
   const asked = draft.verdict !== null && draft.verdict !== 'yes' ? draft.verdict : null;
@@ -219,7 +217,6 @@ function Sitting({ queue, ...props }: ReviewDeskProps & { queue: ReviewQueueView
                   onInWords={writeReason}
                   onDraft={(change) => setDraft({ ...draft, ...change })}
                   onCommit={() => asked && commit(asked, draft.reason)}
-                  reasonField={reasonField}
                   noteField={noteField}
                 />
                 {said ? (

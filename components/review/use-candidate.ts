@@ -52,5 +52,12 @@ export function useCandidate(id: string | null, coming: readonly string[]) {
     setArrived(null);
     setTries((n) => n + 1);
   }, []);
+  // What failed while the link was lost is asked for again by itself.
+  const failed = current?.failure != null;
+  useEffect(() => {
+    if (!failed) return;
+    window.addEventListener('online', retry);
+    return () => window.removeEventListener('online', retry);
+  }, [failed, retry]);
   return { loaded: ready ?? current?.loaded ?? null, failure: current?.failure ?? null, retry };
 }

@@ -25,7 +25,6 @@ interface VerdictPanelProps {
   onInWords: () => void;
   onDraft: (change: Partial<Draft>) => void;
   onCommit: () => void;
-  reasonField: RefObject<HTMLInputElement | null>;
   noteField: RefObject<HTMLTextAreaElement | null>;
 }
 
@@ -34,7 +33,7 @@ const shown = (key: string) => key.toUpperCase();
 /** Three verdicts of the same weight and without colour, then the reasons, each with its key. */
 export function VerdictPanel(props: VerdictPanelProps) {
   const { question, keys, draft, said, onVerdict, onReason, onInWords, onDraft, onCommit } = props;
-  const { reasonField, noteField } = props;
+  const { noteField } = props;
   const asks = draft.verdict !== null && draft.verdict !== 'yes';
   return (
     <section aria-labelledby="verdict-question">
@@ -93,7 +92,8 @@ export function VerdictPanel(props: VerdictPanelProps) {
         <label className="block pt-2 text-small text-ink-2">
           Reason, then Enter
           <input
-            ref={reasonField}
+            // With the field itself, so that no letter typed right after the key is taken for another key.
+            autoFocus
             value={draft.reason}
             maxLength={200}
             onChange={(event) => onDraft({ reason: event.target.value })}

@@ -2,7 +2,8 @@
 
 import { useQueryClient } from '@tanstack/react-query';
 import { useState } from 'react';
-import { api, ApiError } from '@/components/data/api-client';
+import { api } from '@/components/data/api-client';
+import { useAct } from '@/components/data/use-act';
 import { Button } from '@/components/ui/button';
 import { ConfirmDialog, Dialog } from '@/components/ui/dialog';
 import { Field } from '@/components/ui/field';
@@ -68,24 +69,15 @@ const selectionKey = (filters: Readonly<Record<string, string>>) =>
 function SaveDialog({ selection, onClose }: { selection: SelectionState; onClose: () => void }) {
   const client = useQueryClient();
   const [name, setName] = useState('');
-  const [busy, setBusy] = useState(false);
-  const [problem, setProblem] = useState<string | null>(null);
+  const { busy, problem, act } = useAct();
   async function save() {
-    setBusy(true);
-    setProblem(null);
-    try {
-      await api('/api/v1/selections', {
-        method: 'POST',
-        idempotencyKey: crypto.randomUUID(),
-        body: { name, filters: selection.filters },
-      });
-      await client.invalidateQueries({ queryKey: SAVED_KEY });
-      onClose();
-    } catch (error) {
-      setProblem(error instanceof ApiError ? (error.errors[0]?.message ?? error.message) : 'That did not work.'); // prettier-ignore
-    } finally {
-      setBusy(false);
-    }
+    await api('/api/v1/selections', {
+      method: 'POST',
+      idempotencyKey: crypto.randomUUID(),
+      body: { name, filters: selection.filters },
+    });
+    await client.invalidateQueries({ queryKey: SAVED_KEY });
+    onClose();
   }
   return (
     <Dialog
@@ -95,7 +87,7 @@ function SaveDialog({ selection, onClose }: { selection: SelectionState; onClose
       actions={
         <>
           <Button onClick={onClose}>Don’t save</Button>
-          <Button kind="main" busy={busy} onClick={() => void save()}>
+          <Button kind="main" busy={busy !== null} onClick={() => void act(save)}>
             Save
           </Button>
         </>
@@ -111,7 +103,7 @@ function SaveDialog({ selection, onClose }: { selection: SelectionState; onClose
         error={problem ?? undefined}
         onChange={({ target }) => setName(target.value)}
         onKeyDown={({ key }) => {
-          if (key === 'Enter') void save();
+          if (key === 'Enter') void act(save);
         }}
       />
     </Dialog>

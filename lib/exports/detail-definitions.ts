@@ -1,10 +1,6 @@
 import type { TableDefinition } from './column';
 import { column } from './define-column';
-
-const value = column('value', 'float64', 'as in column unit', 'The value.');
-const low = column('low', 'float64', 'as in column unit', 'Lower end of its 95 % interval.');
-const high = column('high', 'float64', 'as in column unit', 'Upper end of its 95 % interval.');
-const unit = column('unit', 'text', '', 'Unit of value, low and high.');
+import { intervalHigh, intervalLow, lag, populationName, value, valueUnit } from './shared-columns';
 
 export const OVER_TIME: TableDefinition = {
   name: 'over-time',
@@ -15,11 +11,11 @@ export const OVER_TIME: TableDefinition = {
   columns: [
     column('quantity', 'text', '', 'line_density, trapped_tracers or free_tracers.'),
     column('method', 'text', '', 'How the line density was estimated; count for tracers.'),
-    unit,
+    valueUnit,
     column('t_s', 'float64', 's', 'Middle of the window; 0 is frame 0.'),
     value,
-    low,
-    high,
+    intervalLow,
+    intervalHigh,
   ],
 };
 
@@ -31,11 +27,11 @@ export const PROFILES: TableDefinition = {
   key: ['quantity', 'place_m'],
   columns: [
     column('quantity', 'text', '', 'free_along, trapped_along, spots or line_density.'),
-    unit,
+    valueUnit,
     column('place_m', 'float64', 'm', 'Middle of the strip.'),
     value,
-    low,
-    high,
+    intervalLow,
+    intervalHigh,
   ],
 };
 
@@ -45,7 +41,7 @@ export const ACCELERATIONS: TableDefinition = {
   description: 'R.m.s. accelerations of each population at each lag, localization noise taken out.',
   key: ['population', 'component', 'lag_s'],
   columns: [
-    column('population', 'text', '', 'trapped, free, undecided, or all.'),
+    populationName,
     column('component', 'text', '', 'Along image axes (x, y) or along and across the flow.'),
     column('lag_s', 'float64', 's', 'Time between neighbouring positions of the second difference.'),
     column('rms_m_s2', 'float64', 'm/s^2', 'R.m.s. acceleration; unknown where noise may be all of it.'),
@@ -65,9 +61,9 @@ export const TAILS: TableDefinition = {
     'Power laws of the tails of velocity distributions, density ~ v^-exponent, by maximum likelihood.',
   key: ['population', 'component', 'lag_s'],
   columns: [
-    column('population', 'text', '', 'trapped, free, undecided, or all.'),
+    populationName,
     column('component', 'text', '', 'Component of the velocity.'),
-    column('lag_s', 'float64', 's', 'Time between the two positions.'),
+    lag,
     column('exponent', 'float64', '1', 'Exponent of the density.'),
     column('exponent_low', 'float64', '1', 'Lower end of its 95 % interval.'),
     column('exponent_high', 'float64', '1', 'Upper end of its 95 % interval.'),

@@ -2,14 +2,13 @@ import { POPULATIONS } from '@/tracking/types';
 import type { TableDefinition } from './column';
 import { ACCELERATIONS, CHANGES_OF_STATE, OVER_TIME, PROFILES, TAILS } from './detail-definitions';
 import { column } from './define-column';
+import { intervalHigh, intervalLow, lag, populationName, value, valueUnit } from './shared-columns';
 
 const track = column('track', 'int32', '1', 'Number of the track, from 0 in order of first frame, then y, then x; corrected tracks keep their number or get a new one.'); // prettier-ignore
 const frame = column('frame', 'int32', '1', 'Frame, from 0.');
 const time = column('t_s', 'float64', 's', 'Time; 0 is frame 0.');
 const population = column('population', 'code', '', 'Trapped on a vortex line, free, or undecided.', POPULATIONS); // prettier-ignore
-const populationName = column('population', 'text', '', 'trapped, free, undecided, or all.');
 const component = (what: string) => column('component', 'text', '', `${what} along image axes (x, y) or along and across the flow.`); // prettier-ignore
-const lag = column('lag_s', 'float64', 's', 'Time between the two positions.');
 const low = (unit: string) => column('low', 'float64', unit, 'Lower end of the 95 % band from resampling whole tracks.'); // prettier-ignore
 const high = (unit: string) => column('high', 'float64', unit, 'Upper end of the same band.');
 
@@ -103,11 +102,11 @@ export const ESTIMATES: TableDefinition = {
   key: ['quantity', 'method'],
   columns: [
     column('quantity', 'text', '', 'line_density or line_spacing.'),
-    column('unit', 'text', '', 'Unit of value, low and high.'),
+    valueUnit,
     column('method', 'text', '', 'How it was estimated.'),
-    column('value', 'float64', 'as in column unit', 'The estimate.'),
-    column('low', 'float64', 'as in column unit', 'Lower end of the interval.'),
-    column('high', 'float64', 'as in column unit', 'Upper end of the interval.'),
+    value,
+    intervalLow,
+    intervalHigh,
     column('level', 'float64', '1', 'Coverage of the interval.'),
     column('note', 'text', '', 'Assumptions, or why there is no value.'),
   ],

@@ -1,22 +1,26 @@
-import { mkdirSync } from 'node:fs';
-import { join } from 'node:path';
-import { AxeBuilder } from '@axe-core/playwright';
 import type { Browser, Page } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { closeDatabase } from '@/models/database';
 import { sharedServer } from '../helpers/server';
 import { makeTestLab, type TestLab } from '../helpers/test-lab';
-import { expectNoSidewaysScroll, launchBrowser, openWindow, signIn, type Theme, type Visit } from './support/browser'; // prettier-ignore
+import {
+  expectNoSeriousViolation,
+  expectNoSidewaysScroll,
+  keepPicture,
+  launchBrowser,
+  openWindow,
+  signIn,
+  type Theme,
+  type Visit,
+} from './support/browser';
 
 const server = sharedServer();
-const SHOTS = join(import.meta.dirname, '..', 'shots');
 let browser: Browser;
 let visit: Visit;
 let lab: TestLab;
 let resultPath: string;
 
 beforeAll(async () => {
-  mkdirSync(SHOTS, { recursive: true });
   lab = await makeTestLab(server.databaseUrl);
   browser = await launchBrowser();
   visit = await openWindow(browser);
@@ -30,14 +34,9 @@ afterAll(async () => {
 
 async function look(page: Page, name: string, theme: Theme, axe: boolean) {
   await page.waitForFunction(() => document.querySelectorAll('.loading-bars').length === 0);
-  await page.screenshot({ path: join(SHOTS, `${name}-${theme}.png`), fullPage: true });
+  await keepPicture(page, `${name}-${theme}.png`);
   await expectNoSidewaysScroll(page);
-  if (!axe) return;
-  const { violations } = await new AxeBuilder({ page }).analyze();
-  const words = violations
-    .filter(({ impact }) => impact === 'serious' || impact === 'critical')
-    .map(({ id, nodes }) => `${id}: ${nodes.map(({ target }) => target.join(' ')).join(' | ')}`);
-  expect(words, `${name} in ${theme}`).toEqual([]);
+  if (axe) await expectNoSeriousViolation(page, theme, `${name} in ${theme}`);
 }
 
 describe('an experimentalist rehearses a plan', () => {

@@ -1,7 +1,4 @@
-import { mkdirSync } from 'node:fs';
-import { join } from 'node:path';
-import { AxeBuilder } from '@axe-core/playwright';
-import type { Browser, Page } from 'playwright-core';
+import type { Browser } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { Role } from '@/lib/access';
 import { closeDatabase } from '@/models/database';
@@ -11,7 +8,9 @@ import { sharedServer } from '../helpers/server';
 import { until } from '../helpers/until';
 import { makeTestLab, type TestLab } from '../helpers/test-lab';
 import {
+  expectNoSeriousViolation,
   expectNoSidewaysScroll,
+  keepPicture,
   launchBrowser,
   openWindow,
   signIn,
@@ -22,7 +21,6 @@ import {
 const server = sharedServer();
 /** Many pages one after the other; a machine may be busy. */
 const LONG_MS = 600_000;
-const SHOTS = join(import.meta.dirname, '..', 'shots');
 const THEMES: Theme[] = ['light', 'dark'];
 
 /** Pages by the role that uses them; `ID`s stand for what the laboratory has. */
@@ -84,7 +82,6 @@ let empty: TestLab;
 let ids: Record<string, string>;
 
 beforeAll(async () => {
-  mkdirSync(SHOTS, { recursive: true });
   full = await makeTestLab(server.databaseUrl);
   empty = await makeTestLab(server.databaseUrl, 'Bare Cellar Test Laboratory');
   const script = new ApiScript(server.baseUrl, full.people.experimentalist.token);
@@ -113,18 +110,6 @@ async function keptMail(): Promise<string> {
 
 const addressOf = (page: string) => page.replace(/[A-Z]{3,}/, (name) => ids[name] ?? name);
 
-/** Rules don't depend on the window, and all but one not on the theme: axe looks at the wide one only. */
-async function expectNoSeriousViolation(page: Page, theme: Theme, where: string) {
-  // No page has a frame, so nothing has to be gathered in a further window.
-  const axe = new AxeBuilder({ page }).setLegacyMode();
-  const { violations } = await (theme === 'dark' ? axe.withRules('color-contrast') : axe).analyze();
-  const serious = violations.filter(({ impact }) => impact === 'serious' || impact === 'critical');
-  const words = serious.map(
-    ({ id, nodes }) => `${id}: ${nodes.map(({ target }) => target.join(' ')).join(' | ')}`,
-  );
-  expect(words, where).toEqual([]);
-}
-
 async function look(
   lab: TestLab,
   role: Role,
@@ -145,8 +130,9 @@ async function look(
       timeout: 20_000,
     });
     const file = `${name}-${path.replace(/\W+/g, '-').replace(/^-|-$/g, '') || 'overview'}-${size}-${theme}.png`;
-    await page.screenshot({ path: join(SHOTS, file), fullPage: true });
+    await keepPicture(page, file);
     await expectNoSidewaysScroll(page);
+    // Rules don't depend on the window.
     if (size === 'wide') await expectNoSeriousViolation(page, theme, `${path} in ${theme}`);
     const expected404 = path === '/nowhere' || path === '/lab/storage';
     const unexpected = complaints.filter((text) => !(expected404 && /40[34]/.test(text)));
@@ -189,7 +175,7 @@ describe.each(THEMES)('every page in the %s theme', (theme) => {
     for (const path of ['/sign-in', '/new-password', '/new-password/closed', '/away']) {
       await page.goto(path);
       await expectNoSeriousViolation(page, theme, `${path} in ${theme}`);
-      await page.screenshot({ path: join(SHOTS, `${path.slice(1).replace('/', '-')}-${theme}.png`) });
+      await keepPicture(page, `${path.slice(1).replace('/', '-')}-${theme}.png`);
     }
     await context.close();
   }, 60_000);

@@ -1,3 +1,6 @@
+import { mkdirSync } from 'node:fs';
+import { join } from 'node:path';
+import { AxeBuilder } from '@axe-core/playwright';
 import { chromium, type Browser, type BrowserContext, type Page } from 'playwright-core';
 import { expect } from 'vitest';
 import type { LabPerson } from '../../helpers/test-lab';
@@ -64,4 +67,24 @@ export async function signIn(page: Page, person: LabPerson): Promise<void> {
 export async function expectNoSidewaysScroll(page: Page): Promise<void> {
   const over = await page.evaluate(() => document.documentElement.scrollWidth - window.innerWidth);
   expect(over, `${page.url()} is ${over} px wider than its window`).toBeLessThanOrEqual(0);
+}
+
+/** axe finds nothing that is serious. All rules but that of contrast are the same in both themes: dark is looked at for it. */
+export async function expectNoSeriousViolation(page: Page, theme: Theme, where: string): Promise<void> {
+  // No page has a frame, so nothing has to be gathered in a further window.
+  const axe = new AxeBuilder({ page }).setLegacyMode();
+  const { violations } = await (theme === 'dark' ? axe.withRules('color-contrast') : axe).analyze();
+  const serious = violations.filter(({ impact }) => impact === 'serious' || impact === 'critical');
+  const words = serious.map(
+    ({ id, nodes }) => `${id}: ${nodes.map(({ target }) => target.join(' ')).join(' | ')}`,
+  );
+  expect(words, where).toEqual([]);
+}
+
+/** A picture of the whole page for people to look at, in the folder that `TEST_SHOTS` names; without it none is made. */
+export async function keepPicture(page: Page, name: string): Promise<void> {
+  const folder = process.env.TEST_SHOTS;
+  if (!folder) return;
+  mkdirSync(folder, { recursive: true });
+  await page.screenshot({ path: join(folder, name), fullPage: true });
 }

@@ -1,6 +1,3 @@
-import { mkdirSync } from 'node:fs';
-import { join } from 'node:path';
-import { AxeBuilder } from '@axe-core/playwright';
 import type { Page } from 'playwright-core';
 import { beforeAll, expect, it } from 'vitest';
 import { makeToken } from '@/auth/tokens';
@@ -12,12 +9,18 @@ import type { ReviewQueueView } from '@/lib/views/review-view';
 import { models } from '@/models';
 import { execute, selectRows } from '@/models/queries/select';
 import { ApiScript } from '../../helpers/api-client';
-import { candidateFacts } from '../../helpers/candidates';
+import { makeCandidates } from '../../helpers/candidates';
 import { until } from '../../helpers/until';
-import { expectNoSidewaysScroll, openWindow, signIn, type Visit } from './browser';
+import {
+  expectNoSeriousViolation,
+  expectNoSidewaysScroll,
+  keepPicture,
+  openWindow,
+  signIn,
+  type Visit,
+} from './browser';
 import { analysisId, browser, lab, server } from './review-day';
 
-const SHOTS = join(import.meta.dirname, '..', '..', 'shots');
 const COUNT = 30;
 
 /** The window of whoever judges or settles. */
@@ -34,30 +37,16 @@ async function meetings(): Promise<void> {
     [analysisId],
   );
   expect(tracks.length).toBe(COUNT + 1);
-  for (let event = 0; event < COUNT; event++) {
+  await makeCandidates(lab, analysisId, COUNT, (event) => {
     const [a, b] = [tracks[event], tracks[event + 1]];
-    const facts = candidateFacts({
+    return {
       trackA: a.number,
       trackB: b.number,
       xPx: (a.x + b.x) / 2,
       yPx: (a.y + b.y) / 2,
       qValue: 0.001 * (event + 1),
-    });
-    const { trackA, trackB, t0S, pChance, qValue, accepted } = facts;
-    const row = {
-      labId: lab.labId,
-      analysisId,
-      event,
-      trackA,
-      trackB,
-      t0S,
-      pChance,
-      qValue,
-      accepted,
-      facts,
     };
-    await models().Candidate.create({ id: newId(), ...row });
-  }
+  });
 }
 
 async function secondReader(): Promise<string> {
@@ -87,19 +76,14 @@ export async function looksRight(page: Page, name: string): Promise<void> {
   await page.waitForFunction(() => document.querySelectorAll('.loading-bars').length === 0, null, {
     timeout: 30_000,
   });
-  await page.screenshot({ path: join(SHOTS, `${name}.png`), fullPage: true });
+  await keepPicture(page, `${name}.png`);
   await expectNoSidewaysScroll(page);
-  const { violations } = await new AxeBuilder({ page }).analyze();
-  const serious = violations.filter(({ impact }) => impact === 'serious' || impact === 'critical');
-  expect(serious.map(({ id, nodes }) => `${id}: ${nodes.map(({ target }) => target).join(' | ')}`)).toEqual(
-    [],
-  );
+  await expectNoSeriousViolation(page, 'light', name);
 }
 
 /** Reader, second reader, principal investigator; each step leads to the next. */
 export function theyJudge(): void {
   beforeAll(async () => {
-    mkdirSync(SHOTS, { recursive: true });
     await meetings();
     second = new ApiScript(server.baseUrl, await secondReader());
     visit = await openWindow(browser);
