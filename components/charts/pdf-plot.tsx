@@ -2,6 +2,7 @@
 
 import { EmptyState } from '@/components/ui/page-states';
 import { DRAWING_ORDER } from '@/lib/charts/curve';
+import { kernelPoints } from '@/lib/charts/kernel-curve';
 import { pdfTable } from '@/lib/charts/pdf-table';
 import { ChartFrame } from './chart-frame';
 import { binMiddleMmS, densitySMm, labelBin, pdfBands, pdfPoints, pdfRanges } from '@/lib/charts/pdf-series';
@@ -38,6 +39,8 @@ const PLACES: Record<'log' | 'linear', Record<PdfPopulation, Place>> = {
     all: { share: 0.6, side: 'left', dxPx: -30, dyPx: -20 },
   },
 };
+/** The kernel estimate of every population: a hairline over its histogram, which keeps the stroke. */
+const KERNEL_LOOK = { stroke: 'var(--ink)', widthPx: 1, dash: '3 2' };
 const SUBSCRIPTS: Partial<Record<PdfComponent, string>> = { x: 'x', y: 'y' };
 
 /** Velocity density of each population, on a linear or a log axis, with 95 % bands. */
@@ -56,7 +59,12 @@ export function PdfPlot({
   const drawn = DRAWING_ORDER.flatMap((population) => series.filter((one) => one.population === population));
   const words = SUBSCRIPTS[component] ? undefined : component === 'speed' ? 'speed' : component;
   return (
-    <ChartFrame label={label} fileName={fileName} table={pdfTable(series)}>
+    <ChartFrame
+      label={label}
+      fileName={fileName}
+      table={pdfTable(series)}
+      caption={series.some(({ kernel }) => kernel) ? 'Dashed hairline: kernel estimate' : undefined}
+    >
       <Plot
         heightPx={heightPx}
         x={{ ...ranges.x, title: { symbol: 'v', sub: SUBSCRIPTS[component], words, unit: 'mm/s' } }}
@@ -75,6 +83,9 @@ export function PdfPlot({
         {drawn.map((one) => (
           <Series key={one.population} one={one} log={log} />
         ))}
+        {drawn.map(({ population, kernel }) =>
+          kernel ? <LineMark key={population} points={kernelPoints(kernel)} {...KERNEL_LOOK} /> : null,
+        )}
         {drawn.map((one) => (
           <SeriesLabel key={one.population} one={one} scale={scale} />
         ))}

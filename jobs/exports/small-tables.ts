@@ -52,6 +52,17 @@ export function velocityPdfPiece(table: TableDefinition, pdfs: readonly Velocity
   return piece(table, rows, [...velocityPdfCsv(pdfs)].join(''));
 }
 
+export function velocityKernelPiece(table: TableDefinition, pdfs: readonly VelocityPdf[]): TablePiece {
+  const rows = pdfs.flatMap(({ population, component, lagS, kernel }) => {
+    // Analyses that are older than the kernel estimate have none.
+    if (!kernel) return [];
+    const { atMS, density, widthMS, toldFromMS, toldToMS } = kernel;
+    const told = (at: number) => (at >= toldFromMS && at <= toldToMS ? 1 : 0);
+    return atMS.map((at, i) => [population, component, lagS, at, density[i], widthMS, told(at)]);
+  });
+  return piece(table, rows);
+}
+
 export function reconnectionsPiece(
   table: TableDefinition,
   candidates: readonly ReconnectionRow[],

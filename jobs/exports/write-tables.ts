@@ -32,6 +32,8 @@ export function piecesOf(
       return velocityPieces(tracks(), analysis.recipe.lagsFrames, conditions, withCsv);
     case tables.VELOCITY_PDF:
       return [small.velocityPdfPiece(table, measures.pdfs)];
+    case tables.VELOCITY_KERNEL:
+      return [small.velocityKernelPiece(table, measures.pdfs)];
     case tables.DISPLACEMENTS:
       return [small.displacementsPiece(table, measures.motion)];
     case tables.AUTOCORRELATIONS:

@@ -31,6 +31,7 @@ export function pdfSeries(pdf: Pdf): PdfSeries {
   return {
     population: pdf.population,
     finding: spread(pdf),
+    kernel: pdf.kernel,
     bins: pdf.count.map((count, i) => ({
       low_m_s: pdf.edges_m_s[i],
       high_m_s: pdf.edges_m_s[i + 1],

@@ -1,4 +1,5 @@
 import { decadeRange, paddedRange, type AxisRange } from './axis-ticks';
+import { kernelPoints, type KernelCurve } from './kernel-curve';
 
 export type PdfPopulation = 'trapped' | 'free' | 'undecided' | 'all';
 export type PdfComponent = 'x' | 'y' | 'along' | 'across' | 'speed';
@@ -16,6 +17,7 @@ export interface PdfBin {
 export interface PdfSeries {
   population: PdfPopulation;
   bins: readonly PdfBin[];
+  kernel?: KernelCurve | null;
   /** The fit in words, beside the population's name: "tail exponent −3.1 ± 0.2". */
   finding?: string;
 }
@@ -70,7 +72,8 @@ export function pdfRanges(
   const top = speeds.reduce((a, b) => Math.max(a, b)) * MM_S_PER_M_S;
   const end = paddedRange(0, top, 3).max;
   const densities = filled.map((bin) => densitySMm(bin.density_s_m));
-  const highest = densities.reduce((a, b) => Math.max(a, b));
+  const curves = series.flatMap(({ kernel }) => (kernel ? kernelPoints(kernel) : []));
+  const highest = [...densities, ...curves.map(({ y }) => y)].reduce((a, b) => Math.max(a, b));
   // Room under the lowest bead for the marks of empty bins.
   const lowest = densities.reduce((a, b) => Math.min(a, b));
   const y = log ? decadeRange([lowest * 0.7, highest * 1.5]) : paddedRange(0, highest * 1.05);

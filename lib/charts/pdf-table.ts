@@ -1,4 +1,5 @@
 import type { ChartTable } from './chart-table';
+import { meanOverBin } from './kernel-curve';
 import { densitySMm, type PdfSeries } from './pdf-series';
 
 /** The numbers behind a plot of velocity densities, in its printed units. */
@@ -12,8 +13,9 @@ export function pdfTable(series: readonly PdfSeries[]): ChartTable {
       { name: 'density', unit: 's/mm' },
       { name: 'low, 95 %', unit: 's/mm' },
       { name: 'high, 95 %', unit: 's/mm' },
+      { name: 'kernel, mean of bin', unit: 's/mm' },
     ],
-    rows: series.flatMap(({ population, bins }) =>
+    rows: series.flatMap(({ population, bins, kernel }) =>
       bins.map((bin) => [
         population,
         bin.low_m_s * 1000,
@@ -22,6 +24,7 @@ export function pdfTable(series: readonly PdfSeries[]): ChartTable {
         densitySMm(bin.density_s_m),
         bin.densityLow == null ? null : densitySMm(bin.densityLow),
         bin.densityHigh == null ? null : densitySMm(bin.densityHigh),
+        kernel ? densitySMm(meanOverBin(kernel, bin.low_m_s, bin.high_m_s)) : null,
       ]),
     ),
   };

@@ -71,6 +71,23 @@ export const VELOCITY_PDF: TableDefinition = {
   ],
 };
 
+export const VELOCITY_KERNEL: TableDefinition = {
+  name: 'velocity-kernel',
+  title: 'Velocity distributions by kernels',
+  description:
+    'A row per place of each kernel estimate of a velocity distribution, which is straight between its places. The integral of each density is 1.',
+  key: ['population', 'component', 'lag_s', 'velocity_m_s'],
+  columns: [
+    populationName,
+    component('Velocity'),
+    lag,
+    column('velocity_m_s', 'float64', 'm/s', 'Place of the curve.'),
+    column('density_s_m', 'float64', 's/m', 'Probability density there.'),
+    column('width_m_s', 'float64', 'm/s', 'Standard deviation of the Gaussian kernel where samples are dense; it widens where they are rare.'), // prettier-ignore
+    column('told', 'int32', '1', '0 among the ten outermost samples (of fewer than a hundred: a tenth) at either end, where the curve has the shape of their kernels; else 1.'), // prettier-ignore
+  ],
+};
+
 export const RECONNECTIONS: TableDefinition = {
   name: 'reconnections',
   title: 'Candidates for reconnections',
@@ -142,6 +159,7 @@ export const ANALYSIS_TABLES: readonly TableDefinition[] = [
   TRACKS,
   VELOCITIES,
   VELOCITY_PDF,
+  VELOCITY_KERNEL,
   DISPLACEMENTS,
   AUTOCORRELATIONS,
   ACCELERATIONS,

@@ -1,8 +1,9 @@
 import { DRAWING_ORDER } from '../charts/curve';
+import { kernelPoints } from '../charts/kernel-curve';
 import { pdfBands, pdfPoints, pdfRanges, type PdfComponent, type PdfSeries } from '../charts/pdf-series';
 import { drawAxes } from './axes';
 import { linePath, rounded, type Figure, type PathMark, type WidthMm } from './figure';
-import { POPULATION_STROKES } from './paper';
+import { PAPER, POPULATION_STROKES } from './paper';
 import { legendMarks, strokeMarks } from './populations-legend';
 
 /**
@@ -50,6 +51,12 @@ export function velocityPdfFigure(
     const d = pdfPoints(empty, false).map(({ x }) => triangle(axes.x(x), axes.bottom)).join(''); // prettier-ignore
     return [{ kind: 'path', d, stroke: POPULATION_STROKES[population].colour, strokePt: 0.5, clipped: true }];
   });
+  const hairlines = drawn.flatMap(({ kernel }): PathMark[] => {
+    if (!kernel) return [];
+    // What a log axis can't place breaks the line.
+    const points = kernelPoints(kernel).map(({ x, y }) => (y > 0 ? ([axes.x(x), axes.y(y)] as const) : null));
+    return [{ kind: 'path', d: linePath(points), stroke: PAPER.ink, strokePt: 0.5, dash: [1.8, 1.2], clipped: true }]; // prettier-ignore
+  });
   const legend = legendMarks(
     axes,
     [...drawn].reverse().map(({ population, finding }) => ({
@@ -62,7 +69,7 @@ export function velocityPdfFigure(
     widthPt: axes.widthPt,
     heightPt: axes.heightPt,
     clip: { x: left, y: top - 3, width: right - left, height: bottom - top + 3 },
-    marks: [...axes.marks, ...bands, ...floor, ...strokes, ...legend],
+    marks: [...axes.marks, ...bands, ...floor, ...strokes, ...hairlines, ...legend],
     title,
   };
 }

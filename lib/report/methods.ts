@@ -41,8 +41,9 @@ export const METHODS_IN_WORDS: readonly MethodWords[] = [
   {
     step: 'Velocity distributions',
     words:
-      'Displacements over a lag; bands from resampling whole tracks. Distributions of several runs are pooled run by run, each counted once, with the variance between runs beside the mean.',
-    source: 'bootstrap of clusters; DerSimonian & Laird, Controlled Clinical Trials 7, 177 (1986)',
+      'Displacements over a lag; bands from resampling whole tracks; beside the histogram Gaussian kernels whose width grows where samples are rare. Distributions of several runs are pooled run by run, each counted once, with the variance between runs beside the mean.',
+    source:
+      'bootstrap of clusters; Silverman, Density Estimation (1986); Abramson, Ann. Stat. 10, 1217 (1982); DerSimonian & Laird, Controlled Clinical Trials 7, 177 (1986)',
   },
   {
     step: 'Line density',

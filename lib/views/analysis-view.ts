@@ -180,6 +180,19 @@ export const measuresViewSchema = z.object({
       noise_m_s: numberOrNull,
       /** Flatness less 3, localization noise included. */
       excessKurtosis: numberOrNull,
+      /** Kernel estimate, straight between its places; null where there is none, as in analyses older than it. */
+      kernel: z
+        .object({
+          /** Standard deviation of the kernel where samples are dense, and the independent samples that set it. */
+          width_m_s: z.number(),
+          independentSamples: count,
+          at_m_s: z.array(z.number()),
+          density_s_m: z.array(z.number()),
+          /** Few samples lie beyond these. */
+          toldFrom_m_s: z.number(),
+          toldTo_m_s: z.number(),
+        })
+        .nullable(),
     }),
   ),
   estimates: z.array(

@@ -1,6 +1,6 @@
 import { LabError, notFound } from '@/lib/errors';
 import type { MeasuresView } from '@/lib/views/analysis-view';
-import type { VelocityPdf } from '@/tracking/velocity-pdf-shape';
+import type { PdfKernel, VelocityPdf } from '@/tracking/velocity-pdf-shape';
 import { readMeasures, type StoredMeasures } from './analysis-outcome';
 import { detailsView } from './details-view';
 import { motionView } from './motion-view';
@@ -87,5 +87,15 @@ export function pdfView(pdf: VelocityPdf): MeasuresView['pdfs'][number] {
     standardDeviation_m_s: root(pdf.varianceM2S2),
     noise_m_s: root(pdf.noiseVarianceM2S2),
     excessKurtosis: pdf.excessKurtosis,
+    kernel: pdf.kernel ? kernelView(pdf.kernel) : null,
   };
 }
+
+const kernelView = (kernel: PdfKernel): MeasuresView['pdfs'][number]['kernel'] => ({
+  width_m_s: kernel.widthMS,
+  independentSamples: kernel.independent,
+  at_m_s: kernel.atMS,
+  density_s_m: kernel.density,
+  toldFrom_m_s: kernel.toldFromMS,
+  toldTo_m_s: kernel.toldToMS,
+});

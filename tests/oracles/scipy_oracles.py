@@ -210,10 +210,44 @@ def least_squares(random):
     return cases
 
 
+def kernel_densities(random):
+    """Gaussian kernels of one width (Silverman 1986, eq. 3.31), and of widths that follow a first estimate (Abramson)."""
+    cases = []
+    bodies = [random.normal(size=250), random.standard_t(2, size=400), np.hypot(*random.normal(size=(2, 300)))]
+    bodies.append(np.concatenate([random.normal(-3, 0.5, size=150), random.normal(2, 1, size=150)]))
+    for trial, body in enumerate(bodies):
+        values = np.round(body, 4)
+        is_speed = trial == 2
+        quartiles = np.subtract(*np.quantile(values, [0.75, 0.25]))
+        scale = min(values.std(ddof=1), quartiles / 1.34)
+        width = 0.9 * scale * len(values) ** -0.2
+        # What lies behind a wall at 0 is laid over what is before it.
+        sides = np.concatenate([values, -values]) if is_speed else values
+        parts = 2 if is_speed else 1
+        first = stats.gaussian_kde(sides, bw_method=width / sides.std(ddof=1))
+        pilot = parts * first(values)
+        widths = width * np.sqrt(stats.gmean(pilot) / pilot)
+        low, high = (0, 1.1 * values.max()) if is_speed else np.quantile(values, [0.005, 0.995])
+        at = np.round(np.linspace(low, high, 41), 4)
+        adapted = parts * stats.norm.pdf(at[:, None], sides, np.tile(widths, parts)).mean(axis=1)
+        cases.append(
+            {
+                "isSpeed": is_speed,
+                "values": values.tolist(),
+                "scale": float(scale),
+                "width": float(width),
+                "at": at.tolist(),
+                "even": rounded(parts * first(at)),
+                "adapted": rounded(adapted),
+            }
+        )
+    return cases
+
+
 def main():
     FOLDER.mkdir(parents=True, exist_ok=True)
     # A stream each: a change of one set of cases leaves the others as they are.
-    streams = [np.random.default_rng([SEED, i]) for i in range(6)]
+    streams = [np.random.default_rng([SEED, i]) for i in range(7)]
     write("filters", filters(streams[0]))
     write("assignment", assignment(streams[1]))
     write("drawn-assignments", drawn_assignments())
@@ -223,6 +257,7 @@ def main():
     write("robust", robust(streams[3]))
     write("non-negative-least-squares", least_squares(streams[4]))
     write("peaks", peaks(streams[5]))
+    write("kernel-densities", kernel_densities(streams[6]))
 
 
 main()

@@ -52,6 +52,9 @@ test('ends and quartiles are those of the sorted samples', () => {
       median: sortedQuantile(sorted, 0.5),
       upperQuartile: sortedQuantile(sorted, 0.75),
       most: sorted[n - 1],
+      // A tenth of so few outside, rounded up.
+      nearLeast: sorted[Math.ceil(n / 10) - 1],
+      nearMost: sorted[n - Math.ceil(n / 10)],
     });
   }
 });
@@ -87,6 +90,28 @@ describe('velocity distributions', () => {
     const samples = (name: string) =>
       pdfs.find((p) => p.population === name && p.component === 'x')?.samples ?? 0;
     expect(samples('trapped') + samples('free')).toBe(samples('all'));
+  });
+
+  test('beside each histogram stands a kernel estimate that tells the same, its width set by tracks', () => {
+    for (const { kernel, density, edgesMS, component } of pdfs) {
+      if (!kernel) throw new Error('no kernel estimate');
+      const { atMS } = kernel;
+      const integral = atMS.reduce(
+        (sum, v, k) => (k ? sum + 0.5 * (kernel.density[k] + kernel.density[k - 1]) * (v - atMS[k - 1]) : 0),
+        0,
+      );
+      expectWithin(integral, 1, { abs: 1e-5 });
+      if (component === 'speed') expect(atMS[0]).toBe(0);
+      // Straight tracks are one sample each.
+      expect(kernel.independent).toBeGreaterThanOrEqual(100);
+      expect(kernel.independent).toBeLessThan(330);
+      const peak = Math.max(...density);
+      const highest = Math.max(...kernel.density);
+      expect(highest).toBeGreaterThan(0.5 * peak);
+      expect(highest).toBeLessThan(1.5 * peak);
+      expect(kernel.toldFromMS).toBeGreaterThanOrEqual(edgesMS[0]);
+      expect(kernel.toldToMS).toBeLessThanOrEqual(edgesMS.at(-1) ?? 0);
+    }
   });
 
   test('mean, variance and noise are those the tracks were made with', () => {

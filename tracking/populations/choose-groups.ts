@@ -1,3 +1,4 @@
+import { averagedProbabilities } from './averaged-probabilities';
 import type { FeatureTable, Standardised } from './feature-table';
 import { fitGroups } from './fit-groups';
 import {
@@ -36,7 +37,7 @@ export interface ChosenGroups {
   bic: (number | null)[];
   ashmanD: number | null;
   groups: GroupMeans[];
-  /** Rows of as many probabilities as groups. */
+  /** Rows of as many probabilities as groups, the groups' own uncertainty allowed for. */
   probability: Float64Array;
   /** The two components in the order of `groups`; null where there is one group or none. */
   two: readonly [Component, Component] | null;
@@ -94,7 +95,8 @@ export function chooseGroups(table: FeatureTable, scaled: Standardised, seed: nu
     const counts = smaller > SMALLER_WEIGHT_MIN && smaller * table.n > SMALLER_TRACKS_MIN;
     if (one - two > BIC_GAIN_MIN && ashmanD > ASHMAN_D_MIN && counts) {
       const [first, second] = fits[1].components;
-      return { bic, ashmanD, groups, probability: full[1].responsibilities, two: [first, second] };
+      const probability = averagedProbabilities(data, fits[1].components, seed);
+      return { bic, ashmanD, groups, probability, two: [first, second] };
     }
   }
   const single = fits[0];

@@ -23,7 +23,7 @@ export const FIT_ROWS_MAX = 2000;
  * @param data standardised values.
  */
 export function fitGroups(data: MixtureData, k: number, seed: number): Mixture | null {
-  const rows = sample(data, FIT_ROWS_MAX, mixSeed(seed, 1));
+  const rows = fitRows(data, seed);
   if (k === 1) return fitMixture(rows, new Float64Array(rows.n).fill(1), 1);
   const few = sample(rows, FIRST_ROWS, mixSeed(seed, 2));
   const points = (from: MixtureData) =>
@@ -59,6 +59,10 @@ export function fitGroups(data: MixtureData, k: number, seed: number): Mixture |
   }
   return best;
 }
+
+/** The rows that a mixture is fitted to. */
+export const fitRows = (data: MixtureData, seed: number): MixtureData =>
+  sample(data, FIT_ROWS_MAX, mixSeed(seed, 1));
 
 /** Responsibilities of 1 for the nearest centre. */
 function hardStart(points: number[][], centres: number[][]): Float64Array {

@@ -106,6 +106,32 @@ function blank(dims: number): Component {
   return { weight: 1, beta: new Float64Array(dims + 2), covariance };
 }
 
+/**
+ * The mixture that fits some rows several times and others not at all, by a few steps from one that fits all.
+ *
+ * @param rowWeight how often each row counts, as often as there are rows in all.
+ * @returns null where a component lost its members.
+ */
+export function refitMixture(
+  data: MixtureData,
+  from: readonly Component[],
+  rowWeight: ArrayLike<number>,
+  steps: number,
+): Component[] | null {
+  const k = from.length;
+  const components = from.map(({ weight, beta, covariance }) => ({
+    weight,
+    beta: beta.slice(),
+    covariance: covariance.slice(),
+  }));
+  for (let step = 0; step < steps; step++) {
+    const { responsibilities: q, lnLikelihood } = responsibilities(data, components);
+    if (!Number.isFinite(lnLikelihood)) return null;
+    for (let j = 0; j < k; j++) if (!maximise(data, q, k, j, components[j], false, rowWeight)) return null;
+  }
+  return components;
+}
+
 /** Updates one component from the responsibilities; false where it has lost its members. */
 function maximise(
   data: MixtureData,
@@ -114,6 +140,7 @@ function maximise(
   j: number,
   c: Component,
   isStart: boolean,
+  rowWeight?: ArrayLike<number>,
 ): boolean {
   const { n, dims } = data;
   const work = new RowWork(dims);
@@ -126,7 +153,7 @@ function maximise(
   const moments = new Float64Array(QUADRATIC * dims);
 
   for (let i = 0; i < n; i++) {
-    const weight = q[i * k + j];
+    const weight = q[i * k + j] * (rowWeight ? rowWeight[i] : 1);
     // At the start there is no component yet to shrink towards, so the values stand for themselves.
     if (isStart) for (let d = 0; d < dims; d++) work.latent[d] = data.value[i * dims + d];
     else work.condition(data, i, c);
@@ -145,7 +172,7 @@ function maximise(
 
   const mean = new Float64Array(dims);
   for (let i = 0; i < n; i++) {
-    const weight = q[i * k + j];
+    const weight = q[i * k + j] * (rowWeight ? rowWeight[i] : 1);
     meanAt(c, data.coordinate[i], dims, mean);
     for (let d = 0; d < dims; d++) {
       const rd = weight * (latent[i * dims + d] - mean[d]);

@@ -155,7 +155,7 @@ class Tally {
 /** At most 0.02 below the rule that knows the densities, at most 10 % undecided, probabilities that are what they say. */
 export const keepsPopulations = (figures: PopulationFigures): boolean =>
   figures.split === figures.trials &&
-  (figures.separation < 4 || figures.reliabilityChance >= 0.05) &&
+  figures.reliabilityChance >= 0.05 &&
   figures.balancedAccuracy >= figures.bestAccuracy - 0.02 &&
   (figures.separation < 4 || figures.balancedAccuracy >= 0.95) &&
   figures.undecided <= Math.max(0.1, figures.bestUndecided + 0.02);

@@ -1,3 +1,4 @@
+import { Z95 } from '../normal-tail';
 import { createRandom, mixSeed } from '../random';
 import { velocityTails } from '../tails/velocity-tails';
 import type { Tracks } from '../types';
@@ -22,6 +23,8 @@ export interface TailFigures extends TailCase {
   worstOff: number;
   /** Share of 95 % intervals that hold the truth, and of tails called a power law. */
   coverage: number;
+  /** Half widths of intervals over 1.96 r.m.s. errors: 1 where intervals are as wide as they must be. */
+  widthOverError: number;
   namedPowerLaw: number;
 }
 
@@ -33,7 +36,7 @@ const CONDITIONS = { pixelSize_m: 1e-5, frameInterval_s: 0.005, flowDirection: n
 export function studyTailExponents(one: TailCase, seeds: readonly number[]): TailFigures {
   const found = seeds.map((seed) => {
     const tracks = drawnTracks(one, seed);
-    const tails = velocityTails(tracks, new Uint8Array(TRACKS), CONDITIONS, { lagsFrames: [1] });
+    const tails = velocityTails(tracks, new Uint8Array(TRACKS), CONDITIONS, { lagsFrames: [1], seed });
     const speed = tails.find(
       ({ component, population }) => component === 'speed' && population === 'trapped',
     );
@@ -52,9 +55,15 @@ export function studyTailExponents(one: TailCase, seeds: readonly number[]): Tai
     meanExponent: one.exponent + off.reduce((a, b) => a + b, 0) / off.length,
     worstOff: Math.max(...off.map(Math.abs)),
     coverage: holds.length / seeds.length,
+    widthOverError:
+      rms(found.map(({ exponentLow, exponentHigh }) => ((exponentHigh ?? 0) - (exponentLow ?? 0)) / 2)) /
+      (Z95 * rms(off)),
     namedPowerLaw: found.filter(({ verdict }) => verdict === 'power law').length / seeds.length,
   };
 }
+
+const rms = (values: readonly number[]) =>
+  Math.sqrt(values.reduce((sum, v) => sum + v * v, 0) / values.length);
 
 function drawnTracks(one: TailCase, seed: number): Tracks {
   const random = createRandom(mixSeed(seed, 91));
@@ -89,6 +98,14 @@ function drawnTracks(one: TailCase, seed: number): Tracks {
   return tracks;
 }
 
-/** Within 0.2 of the truth with 2,000 independent samples of the tail or more. */
+/** Of a hundred intervals of 95 % fewer hold the truth once in 250 studies. */
+const COVERAGE_LEAST = 0.88;
+const WIDTH_MOST = 1.5;
+
+/** Intervals that hold the truth as often as they say, and are not much wider than that takes. */
+export const keepsTailCoverage = ({ coverage, widthOverError }: TailFigures): boolean =>
+  coverage >= COVERAGE_LEAST && widthOverError <= WIDTH_MOST;
+
+/** Within 0.2 of the truth, noise being a seventh of where the tail begins at most. */
 export const keepsTailExponent = (figures: TailFigures): boolean =>
-  figures.worstOff <= 0.2 && figures.tailSamples >= 2000;
+  figures.worstOff <= 0.2 && keepsTailCoverage(figures);

@@ -1,4 +1,5 @@
 import { lnNormalTail, normalHazard } from '../normal-tail';
+import { noisyLaw, type SizeKind } from './broadened-law';
 
 /** Log of a density above the beginning of a tail, with integral 1 there. */
 export type TailDensity = (sizeMS: number) => number;
@@ -9,10 +10,20 @@ const WIDEST = 20;
 const ROUNDS = 60;
 const GOLDEN = (Math.sqrt(5) - 1) / 2;
 
-export const powerLawDensity =
-  (alpha: number, fromMS: number): TailDensity =>
-  (v) =>
-    Math.log((alpha - 1) / fromMS) - alpha * Math.log(v / fromMS);
+/** The law broadened by noise of `noiseShare` times where it begins. */
+export function powerLawDensity(
+  alpha: number,
+  fromMS: number,
+  noiseShare = 0,
+  kind: SizeKind = 'component',
+): TailDensity {
+  const { second, fourth, norm } = noisyLaw(alpha, noiseShare, kind);
+  const lnNorm = Math.log(norm * fromMS);
+  return (v) => {
+    const perSquare = (fromMS / v) ** 2;
+    return Math.log(1 + perSquare * (second + perSquare * fourth)) - alpha * Math.log(v / fromMS) - lnNorm;
+  };
+}
 
 /** Half of a Gaussian about 0, cut at the beginning, by maximum likelihood. */
 export function fitGaussianTail(sizeMS: ArrayLike<number>, samples: number, fromMS: number): TailDensity {

@@ -20,10 +20,11 @@ const STEPHENS_5_PERCENT = 1.094;
 export function tailError(
   sizeMS: ArrayLike<number>,
   track: ArrayLike<number>,
-  { alpha, fromMS, samples, distance }: PowerLawTail,
+  { fromMS, samples, distance }: Pick<PowerLawTail, 'fromMS' | 'samples' | 'distance'>,
 ): TailError {
-  // theta = mean of ln(v / from) = 1 / (alpha - 1).
-  const theta = 1 / (alpha - 1);
+  // theta = mean of ln(v / from), which is 1 / (alpha - 1) but for noise.
+  let theta = 0;
+  for (let k = 0; k < samples; k++) theta += Math.log(sizeMS[k] / fromMS) / samples;
   const ofTrack = new Map<number, number>();
   for (let k = 0; k < samples; k++) {
     const off = Math.log(sizeMS[k] / fromMS) - theta;

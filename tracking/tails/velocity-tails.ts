@@ -1,10 +1,13 @@
 import { Z95 } from '../normal-tail';
+import { createRandom, mixSeed } from '../random';
+import { packTracks, type TrackPacks } from '../resampling/packs';
 import { ComponentReader, countSamples, someNoise } from '../velocity-pdfs/component-samples';
 import type { PdfPopulation, VelocityComponent } from '../velocity-pdf-shape';
 import { POPULATIONS, type Conditions, type Recipe, type Tracks } from '../types';
 import { unitFlow } from '../velocities';
 import { compareDensities, type LikelihoodRatio } from './likelihood-ratio';
-import { fitPowerLawTail } from './power-law-tail';
+import { fitPowerLawTail, triedTails, type SizeNoise } from './power-law-tail';
+import { resampledExponents } from './resampled-exponents';
 import { fitGaussianTail, fitLogNormalTail, powerLawDensity } from './tail-alternatives';
 import { tailSamples, type TailSamples } from './tail-samples';
 import { tailError } from './tail-error';
@@ -42,6 +45,8 @@ const DOUBT = 0.05;
 /** A law that holds over a smaller range of sizes can't be told from others (common practice, no source). */
 const RANGE_LEAST = 3;
 const NOISE_SAMPLES = 1000;
+/** Draws for the error of an exponent, known to 7 % then. */
+const DRAWS = 100;
 
 /**
  * Power-law tails of the speed and of the components across and along the flow (x and y without one), for
@@ -51,11 +56,12 @@ export function velocityTails(
   tracks: Tracks,
   population: Uint8Array,
   conditions: Conditions,
-  recipe: Pick<Recipe, 'lagsFrames'>,
+  recipe: Pick<Recipe, 'lagsFrames' | 'seed'>,
 ): VelocityTail[] {
   const direction = unitFlow(conditions);
   const components: VelocityComponent[] = direction ? ['along', 'across', 'speed'] : ['x', 'y', 'speed'];
   const tails: VelocityTail[] = [];
+  const packs = packTracks(createRandom(mixSeed(recipe.seed, 22)), tracks.count, DRAWS);
   const readerOf = (lagFrames: number, component: VelocityComponent) =>
     new ComponentReader(tracks, lagFrames, conditions, component, direction ?? [1, 0]);
   for (const lagFrames of recipe.lagsFrames) {
@@ -65,7 +71,9 @@ export function velocityTails(
     const lagS = lagFrames * conditions.frameInterval_s;
     for (const component of components) {
       const reader = readerOf(lagFrames, component);
-      const floor = NOISE_WIDTHS * noiseWidth(someNoise(reader, tracks.count, all, NOISE_SAMPLES));
+      const noiseMS = noiseWidth(someNoise(reader, tracks.count, all, NOISE_SAMPLES));
+      const floor = NOISE_WIDTHS * noiseMS;
+      const noise: SizeNoise = { noiseMS, kind: component === 'speed' ? 'speed' : 'component' };
       [...POPULATIONS, 'all' as const].forEach((name, code) => {
         const takes = (track: number) => name === 'all' || population[track] === code;
         const sizes = tailSamples(reader, tracks.count, lagFrames, takes, component !== 'speed', floor);
@@ -78,7 +86,7 @@ export function velocityTails(
           samples: sizes.samples,
           meanPathM: meanSpeed(speeds, tracks.count, takes) * lagS,
           noiseFloorMS: floor,
-          ...describe(sizes, floor),
+          ...describe(sizes, floor, noise, packs),
         });
       });
     }
@@ -99,9 +107,9 @@ type Described = Pick<
   | 'verdict'
 >;
 
-function describe(sizes: TailSamples, floorMS: number): Described {
+function describe(sizes: TailSamples, floorMS: number, noise: SizeNoise, packs: TrackPacks): Described {
   const { sizeMS, track } = sizes;
-  const tail = fitPowerLawTail(sizeMS, floorMS, sizes.samples);
+  const tail = fitPowerLawTail(sizeMS, floorMS, sizes.samples, noise);
   if (!tail) {
     return {
       tailSamples: 0,
@@ -117,15 +125,21 @@ function describe(sizes: TailSamples, floorMS: number): Described {
   }
   const { alpha, fromMS, samples } = tail;
   const error = tailError(sizeMS, track, tail);
-  const law = powerLawDensity(alpha, fromMS);
+  const law = powerLawDensity(alpha, fromMS, tail.noiseShare, noise.kind);
+  const tried = triedTails(sizeMS, floorMS, sizes.samples);
+  const scatter = standardDeviation(
+    resampledExponents({ sizeMS, track, tried, chosen: samples, noise }, packs),
+  );
+  // The beginning given, samples of the tail alone tell this much; few draws may tell less by chance.
+  const standardError = Math.max(error.standardError, scatter);
   const gaussian = compareDensities(sizeMS, track, samples, law, fitGaussianTail(sizeMS, samples, fromMS));
   const logNormal = compareDensities(sizeMS, track, samples, law, fitLogNormalTail(sizeMS, samples, fromMS));
   return {
     tailSamples: samples,
     tailTracks: new Set(track.subarray(0, samples)).size,
     exponent: alpha,
-    exponentLow: alpha - Z95 * error.standardError,
-    exponentHigh: alpha + Z95 * error.standardError,
+    exponentLow: alpha - Z95 * standardError,
+    exponentHigh: alpha + Z95 * standardError,
     fromMS,
     gaussian,
     logNormal,
@@ -142,6 +156,12 @@ function judge(
   if (gaussian.pEqual < DOUBT && gaussian.lnRatio < 0) return 'Gaussian';
   if (logNormal.pEqual < DOUBT && logNormal.lnRatio < 0) return 'log-normal';
   return wide && fits && gaussian.pEqual < DOUBT ? 'power law' : 'the data cannot tell';
+}
+
+function standardDeviation(values: Float64Array): number {
+  if (values.length < 2) return 0;
+  const mean = values.reduce((sum, v) => sum + v, 0) / values.length;
+  return Math.sqrt(values.reduce((sum, v) => sum + (v - mean) ** 2, 0) / (values.length - 1));
 }
 
 function noiseWidth(variances: readonly number[]): number {

@@ -1,3 +1,4 @@
+import type { EachValue } from '../order-statistics';
 import { POINT_BRIDGED, type Conditions, type Tracks } from '../types';
 import type { VelocityComponent } from '../velocity-pdf-shape';
 
@@ -93,3 +94,14 @@ export function someNoise(
   }
   return found;
 }
+
+/** Visits the samples of the tracks taken. */
+export const eachSample =
+  (reader: ComponentReader, tracks: number, takes: (track: number) => boolean): EachValue =>
+  (visit) => {
+    for (let i = 0; i < tracks; i++) {
+      if (!takes(i)) continue;
+      const n = reader.read(i);
+      for (let k = 0; k < n; k++) visit(reader.values[k]);
+    }
+  };

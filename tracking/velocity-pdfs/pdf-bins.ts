@@ -1,17 +1,9 @@
+import type { SampleSpread } from './sample-spread';
+
 /** Bins are equal to this many robust widths around the median and then grow, so that tails fill them. */
 const CORE_WIDTHS = 4;
 const GROWTH = 1.2;
 const BINS_MAX = 400;
-
-/** What bins follow from: how many samples there are, and where they lie, m/s. */
-export interface SampleSpread {
-  samples: number;
-  least: number;
-  lowerQuartile: number;
-  median: number;
-  upperQuartile: number;
-  most: number;
-}
 
 /**
  * Bin edges for samples of one velocity component, m/s: Freedman & Diaconis (1981) widths in the

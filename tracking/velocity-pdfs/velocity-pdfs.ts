@@ -1,11 +1,11 @@
-import type { EachValue } from '../order-statistics';
 import { createRandom, mixSeed } from '../random';
 import { packTracks } from '../resampling/packs';
 import { POPULATIONS, type Conditions, type Recipe, type Tracks } from '../types';
 import type { PdfPopulation, VelocityComponent, VelocityPdf } from '../velocity-pdf-shape';
 import { unitFlow } from '../velocities';
-import { ComponentReader, countSamples, someNoise } from './component-samples';
+import { ComponentReader, countSamples, eachSample, someNoise } from './component-samples';
 import { histogram } from './histogram';
+import { populationKernel } from './population-kernel';
 import { pdfEdges } from './pdf-bins';
 import { sampleSpread } from './sample-spread';
 
@@ -17,7 +17,7 @@ const NOISE_SAMPLES = 1000;
  * Distribution of every velocity component of every population at every lag of the recipe. The
  * components along and across exist where the conditions give a flow direction. Bins are the same
  * for all populations; bands come from resampling whole tracks, since samples of one track depend
- * on each other. Populations without a sample are left out.
+ * on each other. Beside each histogram stands a kernel estimate. Populations without a sample are left out.
  */
 export function velocityPdfs(
   tracks: Tracks,
@@ -42,25 +42,22 @@ export function velocityPdfs(
       const samples = countSamples(reader, tracks.count);
       if (samples === 0) return;
       const noise = typicalNoise(someNoise(reader, tracks.count, samples, NOISE_SAMPLES));
-      const edges = pdfEdges(sampleSpread(eachSample(reader, tracks.count), samples), noise);
+      const all = sampleSpread(
+        eachSample(reader, tracks.count, () => true),
+        samples,
+      );
+      const edges = pdfEdges(all, noise);
       PDF_POPULATIONS.forEach((name, code) => {
         const takes = (track: number) => name === 'all' || population[track] === code;
         const pdf = histogram({ tracks: tracks.count, takes, reader, edges, ...packs });
-        if (pdf) pdfs.push({ population: name, component, lagFrames, lagS, ...pdf });
+        if (!pdf) return;
+        const kernel = populationKernel({ tracks: tracks.count, takes, reader, pdf, component, all });
+        pdfs.push({ population: name, component, lagFrames, lagS, ...pdf, kernel });
       });
     }
   });
   return pdfs;
 }
-
-const eachSample =
-  (reader: ComponentReader, tracks: number): EachValue =>
-  (visit) => {
-    for (let i = 0; i < tracks; i++) {
-      const n = reader.read(i);
-      for (let k = 0; k < n; k++) visit(reader.values[k]);
-    }
-  };
 
 /** Median of the standard deviations. */
 function typicalNoise(variances: number[]): number {

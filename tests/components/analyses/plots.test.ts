@@ -26,6 +26,7 @@ const pdf = (
   standardDeviation_m_s: 6e-4,
   noise_m_s: null,
   excessKurtosis: null,
+  kernel: null,
 });
 
 describe('the choice of velocity distributions', () => {

@@ -255,7 +255,8 @@ describe('its descriptions', () => {
   });
 
   it('holds what else was measured: over time, profiles, accelerations, tails, captures, with notes', () => {
-    const { details, motion } = measuredScene().measures;
+    const { details, motion, pdfs } = measuredScene().measures;
+    const places = pdfs.reduce((sum, { kernel }) => sum + (kernel?.atMS.length ?? 0), 0);
     const rows = (name: string) => text(`analysis-001/${name}.csv`).trim().split('\r\n').slice(1);
     expect(rows('over-time')).toHaveLength(details.overTime.timeS.length * (2 + details.overTime.densities.length)); // prettier-ignore
     expect(rows('over-time').filter((row) => row.startsWith('trapped_tracers,count,m^-2,'))).toHaveLength(details.overTime.timeS.length); // prettier-ignore
@@ -263,6 +264,8 @@ describe('its descriptions', () => {
     expect(rows('profiles')).toHaveLength(strips * (details.profiles!.densityM2 ? 4 : 3));
     expect(rows('accelerations')).toHaveLength(details.accelerations.length);
     expect(rows('velocity-tails')).toHaveLength(motion.tails.length);
+    expect(places).toBeGreaterThan(100);
+    expect(rows('velocity-kernel')).toHaveLength(places);
     expect(rows('changes-of-state')).toHaveLength(details.changes.length);
     const told = json<Record<string, unknown>>('analysis-001/details.json');
     expect(told.transient).toEqual(JSON.parse(JSON.stringify(details.overTime.transient)));
