@@ -34,7 +34,7 @@ const METHODS: Record<Aspect, string> = {
   memory:
     'Lagrangian autocorrelation over tracks at least twice as long as the lag, unbiased divisor; neighbouring velocities share a position, which is corrected at lags 0 and 1.',
   tails:
-    'Maximum likelihood with the start chosen by the Kolmogorov-Smirnov distance and likelihood ratios (Clauset, Shalizi & Newman, SIAM Rev. 51, 661 (2009); Vuong 1989); −3 near reconnections: Paoletti, Fisher, Sreenivasan & Lathrop, PRL 101, 154501 (2008); tails that end at the line spacing: Baggaley & Barenghi, arXiv:1110.5767.',
+    'Maximum likelihood with the start chosen by the Kolmogorov-Smirnov distance and likelihood ratios (Clauset, Shalizi & Newman, SIAM Rev. 51, 661 (2009); Vuong 1989); the law is broadened by localization noise, and intervals come from resampling whole tracks, each draw with a start of its own; −3 near reconnections: Paoletti, Fisher, Sreenivasan & Lathrop, PRL 101, 154501 (2008); tails that end at the line spacing: Baggaley & Barenghi, arXiv:1110.5767.',
   acceleration:
     'Second differences of three measured positions at the lag; errors by the scatter between tracks.',
 };

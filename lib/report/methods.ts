@@ -35,8 +35,9 @@ export const METHODS_IN_WORDS: readonly MethodWords[] = [
   {
     step: 'Populations',
     words:
-      'Tracks are trapped, free or undecided with a probability, by a Gaussian mixture over features of the tracks with their errors; a track is cut where its tracer was caught or came off.',
-    source: 'expectation-maximization, number of groups by Schwarz, Ann. Stat. 6, 461 (1978)',
+      'Tracks are trapped, free or undecided with a probability, by a Gaussian mixture over features of the tracks with their errors, averaged over what the mixture may be; a track is cut where its tracer was caught or came off.',
+    source:
+      'expectation-maximization, number of groups by Schwarz, Ann. Stat. 6, 461 (1978); Breiman, Machine Learning 24, 123 (1996)',
   },
   {
     step: 'Velocity distributions',

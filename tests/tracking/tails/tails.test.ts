@@ -67,7 +67,7 @@ describe('power-law tail', () => {
   test('samples of one track that say the same widen the interval', () => {
     const single = pareto(6, 500, 3, 1e-3);
     const fourfold = descending(Float64Array.from({ length: 2000 }, (_, k) => single[k >> 2]));
-    const tail = { alpha: 3, fromMS: 1e-3, samples: 2000, distance: 0 };
+    const tail = { fromMS: 1e-3, samples: 2000, distance: 0 };
     const dependent = tailError(
       fourfold,
       Uint32Array.from({ length: 2000 }, (_, k) => k >> 2),
@@ -89,7 +89,7 @@ describe('power-law tail', () => {
         const above = v ** (1 - alpha);
         distance = Math.max(distance, Math.abs(above - k / 300), Math.abs(above - (k + 1) / 300));
       });
-      if (!tailError(size, alone(300), { alpha, fromMS: 1, samples: 300, distance }).fits) refused++;
+      if (!tailError(size, alone(300), { fromMS: 1, samples: 300, distance }).fits) refused++;
     }
     // Binomial with p = 0.05: 20 +- 4.4, bounds at more than 3 standard deviations.
     expect(refused).toBeGreaterThan(5);
