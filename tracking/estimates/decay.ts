@@ -1,5 +1,6 @@
 import { createRandom, mixSeed } from '../random';
 import { KAPPA_M2_S } from '../units';
+import { BLOCKS, blockOf } from './image-blocks';
 import type { EstimateContext } from './context';
 import { lnSpread, notUsable, type DensityResult } from './interval';
 import { fitRelativeDecay } from './relative-decay';
@@ -31,10 +32,10 @@ export function chi2At(temperatureK: number): number {
  * lines carries tracers. The value is that of the middle of the recording.
  */
 export function decayEstimate(
-  context: Pick<EstimateContext, 'tracks' | 'pool' | 'image' | 'conditions' | 'recipe'>,
+  context: Pick<EstimateContext, 'tracks' | 'pool' | 'image' | 'conditions' | 'recipe' | 'groups'>,
 ): DensityResult {
   const method = 'decay';
-  const { tracks, pool, image, conditions, recipe } = context;
+  const { tracks, pool, image, conditions, recipe, groups } = context;
   if (conditions.heatFlux_W_m2) {
     return notUsable(method, 'The flow is driven, so the tangle doesn’t decay freely.');
   }
@@ -44,22 +45,20 @@ export function decayEstimate(
   if (Number.isNaN(chi2)) return notUsable(method, 'No χ₂ is on file at this temperature (1.3 to 2.1 K).');
 
   const windows = Math.min(WINDOWS, image.frames);
-  const counts = countsByTrack(tracks, pool.chosen, image.frames, windows);
+  const chosen = Array.from({ length: tracks.count }, (_, i) => i).filter((i) => pool.chosen[i] === 1);
   const durationS = image.frames * conditions.frameInterval_s;
-  const fit = fitRelativeDecay(totals(counts, null), durationS);
+  const byLine = countsBy((i) => groups.line[i], groups.lines);
+  const fit = fitRelativeDecay(totals(byLine, null), durationS);
   const inputs = {
     chi2: { value: chi2, unit: '' },
     relativeDecayRate: { value: fit.ratePerS, unit: '1/s' },
     duration: { value: durationS, unit: 's' },
   };
-  const random = createRandom(mixSeed(recipe.seed, 45));
-  const rates: number[] = [];
-  for (let draw = 0; draw < recipe.bootstrapDraws; draw++) {
-    const times = Int32Array.from({ length: counts.length }, () => random.poisson(1));
-    rates.push(fitRelativeDecay(totals(counts, times), durationS).ratePerS);
-  }
-  const mean = rates.reduce((a, b) => a + b, 0) / rates.length;
-  const error = Math.sqrt(rates.reduce((sum, rate) => sum + (rate - mean) ** 2, 0) / rates.length);
+  // Tracers of a line go together; so do those of a line that leaves the sheet and comes back elsewhere in it.
+  const draws = [byLine, countsBy(placeOf, BLOCKS)].map((counts, of) => ratesOfDraws(counts, of));
+  const errors = draws.map(spreadOf);
+  const worse = errors[1] > errors[0] ? 1 : 0;
+  const [rates, error] = [draws[worse], errors[worse]];
   const told = fit.ratePerS > SIGNIFICANT * error && fit.ratePerS * durationS > LOSS_LEAST;
   if (rates.length < DRAWS_LEAST || !told) {
     return notUsable(method, 'The number of trapped tracers doesn’t fall by more than chance.', inputs);
@@ -73,24 +72,36 @@ export function decayEstimate(
     inputs,
     note: 'Rate at which trapped tracers become fewer, taken for the free decay of the tangle with a χ₂ from memory, unverified; tracers that leave the sheet or their lines count as decay too.',
   };
+
+  /** Points in every window, by cluster of tracks that know of each other. */
+  function countsBy(cluster: (track: number) => number, clusters: number): Float64Array[] {
+    const counts = Array.from({ length: clusters }, () => new Float64Array(windows));
+    for (const i of chosen) {
+      const row = counts[cluster(i)];
+      for (let p = tracks.start[i]; p < tracks.start[i + 1]; p++)
+        row[Math.floor((tracks.frame[p] * windows) / image.frames)]++;
+    }
+    return counts.filter((row) => row.some((n) => n > 0));
+  }
+
+  function placeOf(track: number): number {
+    const middle = (tracks.start[track] + tracks.start[track + 1]) >> 1;
+    return blockOf(tracks.xPx[middle], tracks.yPx[middle], image);
+  }
+
+  /** Rates of clusters drawn with replacement, each as often as a Poisson variable of mean 1 says. */
+  function ratesOfDraws(counts: readonly Float64Array[], stream: number): number[] {
+    const random = createRandom(mixSeed(recipe.seed, 45 + 1000 * stream));
+    return Array.from({ length: recipe.bootstrapDraws }, () => {
+      const times = Int32Array.from({ length: counts.length }, () => random.poisson(1));
+      return fitRelativeDecay(totals(counts, times), durationS).ratePerS;
+    }).filter(Number.isFinite);
+  }
 }
 
-/** Points of each trapped track in every window. */
-function countsByTrack(
-  tracks: EstimateContext['tracks'],
-  chosen: Uint8Array,
-  frames: number,
-  windows: number,
-): Float64Array[] {
-  const counts: Float64Array[] = [];
-  for (let i = 0; i < tracks.count; i++) {
-    if (chosen[i] !== 1) continue;
-    const row = new Float64Array(windows);
-    for (let p = tracks.start[i]; p < tracks.start[i + 1]; p++)
-      row[Math.floor((tracks.frame[p] * windows) / frames)]++;
-    counts.push(row);
-  }
-  return counts;
+function spreadOf(values: readonly number[]): number {
+  const mean = values.reduce((a, b) => a + b, 0) / values.length;
+  return Math.sqrt(values.reduce((sum, v) => sum + (v - mean) ** 2, 0) / values.length);
 }
 
 function totals(counts: readonly Float64Array[], times: Int32Array | null): Float64Array {

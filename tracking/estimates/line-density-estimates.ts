@@ -31,6 +31,9 @@ const BY_TRACERS: readonly [EstimateMethod, (context: EstimateContext) => Densit
 /** Methods whose formulas take isotropic lines for granted, and count those that carry a tracer. */
 const BY_ISOTROPY: readonly EstimateMethod[] = ['crossings', 'neighbour-distance', 'beads-per-length'];
 
+const NO_MARKS =
+  'It needs lines drawn along the tracers of one vortex line by a person, and nothing draws them yet; tracers that are joined by their motion give the visible line length, a lower limit.';
+
 export interface LineDensityEstimates {
   /** Line density and line spacing by every method and combined. */
   estimates: Estimate[];
@@ -68,7 +71,7 @@ export function lineDensityEstimates(
   });
   const flights = captures && freeFlights(captures.pieces, captures.changes, conditions, pool.driftPx);
   results.push(freePathEstimate(flights, conditions));
-  results.push(notUsable('marked-chains', 'No chain of tracers was marked by a person.'));
+  results.push(notUsable('marked-chains', NO_MARKS));
   results.push(heatFluxPrior(conditions));
   results.push(combine(results));
   return { estimates: results.flatMap(asEstimates), line: groups.line, context };

@@ -47,6 +47,7 @@ export function addBeadsOnLines(builder: SceneBuilder, o: FilledTangleOptions, s
     const [normal] = normalsOf(line.direction);
     const waveNumber = (2 * Math.PI) / o.bendLengthM;
     const phase = 2 * Math.PI * random.uniform();
+    const lifeS = o.decayPerS > 0 ? (1 / (1 - random.uniform()) - 1) / o.decayPerS : Infinity;
     for (let b = 0; b < beads; b++) {
       const s = line.from + random.uniform() * (line.to - line.from);
       // A sine of slope `bendSlope` adds only its square / 4 to the length of the line.
@@ -55,7 +56,7 @@ export function addBeadsOnLines(builder: SceneBuilder, o: FilledTangleOptions, s
       for (let k = 0; k < frames; k++) {
         xPx[k] = (at[0] + path[0][k] + jump.x[k] + drift[0] * k * dt) / px - 0.5;
         yPx[k] = (at[1] + path[1][k] + jump.y[k] + drift[1] * k * dt) / px - 0.5;
-        visible[k] = Math.abs(at[2] + path[2][k]) < half ? 1 : 0;
+        visible[k] = k * dt < lifeS && Math.abs(at[2] + path[2][k]) < half ? 1 : 0;
       }
       blink(random, visible, o.blinkPerFrame);
       builder.add(

@@ -55,6 +55,11 @@ export interface TangleOptions {
   blinkPerFrame?: number;
   /** Free tracers that come this near to a line are caught by it, m; 0 for none. */
   captureRadiusM?: number;
+  /**
+   * Free decay: straight lines end one by one with all their tracers, so that L(t) = `lineDensityM2` / (1 +
+   * rate t) with this rate, 1/s (Vinen 1957); 0 for a steady tangle.
+   */
+  decayPerS?: number;
   /** Pairs of trapped tracers that meet and part; extra to the line process. */
   events?: number;
   /** Pairs that come near each other without reconnecting. */
@@ -80,6 +85,8 @@ export function fillTangleOptions(options: TangleOptions): FilledTangleOptions {
   }
   if (options.curved && options.captureRadiusM)
     throw new RangeError('Lines that move by local induction catch no tracers: leave out captureRadiusM.');
+  if (options.curved && options.decayPerS)
+    throw new RangeError('Lines that move by local induction don’t end: leave out decayPerS.');
   const [fx, fy] = options.flowDirection ?? [1, 0];
   const across = Math.abs(fy) * widthPx + Math.abs(fx) * heightPx;
   return {
@@ -98,6 +105,7 @@ export function fillTangleOptions(options: TangleOptions): FilledTangleOptions {
     brightnessSpread: 0.2,
     blinkPerFrame: 0.01,
     captureRadiusM: 0,
+    decayPerS: 0,
     events: 0,
     decoys: 0,
     eventSideFrames: [12, 40],

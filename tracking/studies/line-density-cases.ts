@@ -1,3 +1,4 @@
+import type { Conditions } from '../types';
 import type { TangleOptions } from '../simulate/tangle-options';
 
 /** Waves whose lines move at about the velocity that the law gives lines of a tangle (factor 2). */
@@ -9,11 +10,18 @@ export interface LineDensityCase {
   lineDensityM2: number;
   scene: Partial<TangleOptions>;
   sizePx?: number;
+  /** Conditions of the run other than those of a counterflow at 1.85 K. */
+  conditions?: Partial<Conditions>;
+  /** The tangle decays freely at the rate of chi_2 from `lineDensityM2` on. */
+  decays?: boolean;
   /** Methods whose assumptions hold: their statistical intervals are held to the truth. */
   holds: readonly string[];
   /** Methods that must decline, or whose note must say what is broken. */
   broken?: { methods: readonly string[]; says: RegExp };
 }
+
+/** Radius of the tracers of which captures are looked for, from which lines catch them, m. */
+const CAPTURE_RADIUS_M = 8e-6;
 
 const BY_COUNTING = ['crossings', 'neighbour-distance', 'beads-per-length'] as const;
 
@@ -50,6 +58,23 @@ export const LINE_DENSITY_CASES: readonly LineDensityCase[] = [
     scene: { curved: STRONG_WAVES },
     holds: ['line-velocity'],
     broken: { methods: BY_COUNTING, says: /lines bend/ },
+  },
+  {
+    name: 'captures',
+    lineDensityM2: 2e7,
+    scene: { beadsPerMetre: 4000, freeTracersPerFrame: 110, captureRadiusM: CAPTURE_RADIUS_M },
+    sizePx: 288,
+    conditions: { tracer: { diameter_m: 2 * CAPTURE_RADIUS_M } },
+    holds: ['free-path'],
+  },
+  {
+    name: 'free decay',
+    lineDensityM2: 1.5e8,
+    scene: { freeTracersPerFrame: 0, vnMPerS: 0, tangleVelocityMPerS: 0 },
+    sizePx: 192,
+    conditions: { heatFlux_W_m2: 0 },
+    decays: true,
+    holds: ['decay'],
   },
   {
     name: 'thick sheet',

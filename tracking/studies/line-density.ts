@@ -1,3 +1,4 @@
+import { chi2At } from '../estimates/decay';
 import type { Estimate } from '../estimates/estimate';
 import { lineDensityEstimates } from '../estimates/line-density-estimates';
 import { densityFromTransverse } from '../estimates/line-velocity';
@@ -11,6 +12,7 @@ import { wavyVelocityFactor } from '../simulate/local-induction/wavy-velocity';
 import { tangleScene } from '../simulate/tangle-scene';
 import { trueTracks } from '../simulate/true-tracks';
 import type { Conditions, Recipe } from '../types';
+import { KAPPA_M2_S } from '../units';
 import type { LineDensityCase } from './line-density-cases';
 
 /** What one simulated tangle gave, over what it was made with. */
@@ -97,6 +99,7 @@ export function lineDensityTrials(
     temperature_K: 1.85,
     heatFlux_W_m2: 675,
     flowDirection: [1, 0],
+    ...one.conditions,
   };
   // One free tracer to three on lines, so that both populations are there in every case.
   const volumeM3 = (sizePx * PIXEL_M) ** 2 * filled.sheetThicknessM;
@@ -104,6 +107,11 @@ export function lineDensityTrials(
   const factor = filled.curved
     ? wavyVelocityFactor(filled.curved, 1 / Math.sqrt(lineDensityM2), SETTLING_S + 0.5 * FRAMES * INTERVAL_S)
     : LINE_VELOCITY_FACTOR;
+  // Vinen 1957: 1 / L grows by chi_2 kappa / (2 pi) per time; the method tells L of the middle.
+  const decayPerS = one.decays
+    ? (lineDensityM2 * chi2At(conditions.temperature_K ?? Number.NaN) * KAPPA_M2_S) / (2 * Math.PI)
+    : 0;
+  const truthM2 = lineDensityM2 / (1 + 0.5 * decayPerS * FRAMES * INTERVAL_S);
   return seeds.flatMap((seed) => {
     const scene = tangleScene({
       widthPx: sizePx,
@@ -111,6 +119,7 @@ export function lineDensityTrials(
       lineDensityM2,
       freeTracersPerFrame,
       ...filled,
+      decayPerS,
       seed,
     });
     const { tracks } = trueTracks(scene, { sigmaPx, seed, shortestTrackFrames: 3 });
@@ -123,11 +132,12 @@ export function lineDensityTrials(
       image,
       conditions,
       RECIPE,
+      { pieces, changes: found.changes },
     );
     // The prior speaks of the heat flux, from which the scene's lines are not made.
     return estimates
       .filter((e) => e.quantity === 'line_density' && e.method !== 'heat-flux-prior')
-      .map((e) => trialOf(seed, e, lineDensityM2, factor));
+      .map((e) => trialOf(seed, e, truthM2, factor));
   });
 }
 

@@ -1,6 +1,7 @@
 import { describe, expect, test } from 'vitest';
 import { chi2At, decayEstimate } from '@/tracking/estimates/decay';
 import { asEstimates } from '@/tracking/estimates/interval';
+import { lineGroups } from '@/tracking/estimates/line-groups';
 import { fitRelativeDecay } from '@/tracking/estimates/relative-decay';
 import { trappedPool } from '@/tracking/estimates/trapped-pool';
 import { createRandom } from '@/tracking/random';
@@ -63,7 +64,10 @@ const IMAGE = { width: 512, height: 512, frames: FRAMES };
 
 const decayOf = (tracks: Tracks, conditions: Conditions = CONDITIONS) => {
   const pool = trappedPool(tracks, new Uint8Array(tracks.count), IMAGE, conditions);
-  const [density] = asEstimates(decayEstimate({ tracks, pool, image: IMAGE, conditions, recipe: RECIPE }));
+  const groups = lineGroups(tracks, pool, IMAGE);
+  const [density] = asEstimates(
+    decayEstimate({ tracks, pool, image: IMAGE, conditions, recipe: RECIPE, groups }),
+  );
   return density;
 };
 
