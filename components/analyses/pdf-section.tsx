@@ -79,7 +79,7 @@ export function PdfSection({ pdfs }: { pdfs: readonly Pdf[] }) {
         fileName={`velocity-pdf-${component}-lag-${lag.lagFrames}`}
       />
       <SourceFold
-        method="Histogram with bins common to all populations, wider than the localization noise; the density integrates to 1; bands by resampling whole tracks, since velocities of one track depend on each other. The dashed hairline is a kernel estimate, drawn where ten samples or more lie beyond: Gaussians whose width follows Silverman’s rule (1986, eq. 3.31) from the number of independent samples (their number over the design effect of tracks, Kish 1965) and grows where samples are rare (Abramson, Ann. Stat. 10, 1217, 1982); its integral is 1. The components along and across are turned by the run’s flow direction."
+        method="Histogram with bins common to all populations, wider than the localization noise; the density integrates to 1; bands by resampling whole tracks, since velocities of one track depend on each other. The hairline is a kernel estimate, drawn where ten samples or more lie beyond: Gaussians whose width follows Silverman’s rule (1986, eq. 3.31) from the number of independent samples (their number over the design effect of tracks, Kish 1965) and grows where samples are rare (Abramson, Ann. Stat. 10, 1217, 1982); its integral is 1. The components along and across are turned by the run’s flow direction."
         inputs={shown.map((one) => ({
           name: one.population,
           value: `${countOf(one.samples, 'velocity', 'velocities')} of ${countOf(one.tracks, 'track')}, flatness ${one.excessKurtosis === null ? 'not known' : (one.excessKurtosis + 3).toFixed(2)}${kernelWords(one)}`,

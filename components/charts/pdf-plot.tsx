@@ -40,7 +40,7 @@ const PLACES: Record<'log' | 'linear', Record<PdfPopulation, Place>> = {
   },
 };
 /** The kernel estimate of every population: a hairline over its histogram, which keeps the stroke. */
-const KERNEL_LOOK = { stroke: 'var(--ink)', widthPx: 1, dash: '3 2' };
+const KERNEL_LOOK = { stroke: 'var(--ink)', widthPx: 1 };
 const SUBSCRIPTS: Partial<Record<PdfComponent, string>> = { x: 'x', y: 'y' };
 
 /** Velocity density of each population, on a linear or a log axis, with 95 % bands. */
@@ -63,7 +63,7 @@ export function PdfPlot({
       label={label}
       fileName={fileName}
       table={pdfTable(series)}
-      caption={series.some(({ kernel }) => kernel) ? 'Dashed hairline: kernel estimate' : undefined}
+      caption={series.some(({ kernel }) => kernel) ? 'Hairline: kernel estimate' : undefined}
     >
       <Plot
         heightPx={heightPx}

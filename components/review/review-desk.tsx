@@ -173,7 +173,11 @@ function Sitting({ queue, ...props }: ReviewDeskProps & { queue: ReviewQueueView
   return (
     <>
       <PathThread levels={levels} actions={progress} />
-      <main id="main" tabIndex={-1} className="px-sheet-x-narrow pb-8 pt-4 outline-none hand:px-sheet-x">
+      <main
+        id="main"
+        tabIndex={-1}
+        className="px-sheet-x-narrow pb-24 pt-4 outline-none hand:px-sheet-x desk:pb-8"
+      >
         <OutboxLine state={state} outbox={outbox} />
         <HereToo analysisId={props.analysisId} place="verdicts" />
         {id === null ? (

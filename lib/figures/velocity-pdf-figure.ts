@@ -55,7 +55,7 @@ export function velocityPdfFigure(
     if (!kernel) return [];
     // What a log axis can't place breaks the line.
     const points = kernelPoints(kernel).map(({ x, y }) => (y > 0 ? ([axes.x(x), axes.y(y)] as const) : null));
-    return [{ kind: 'path', d: linePath(points), stroke: PAPER.ink, strokePt: 0.5, dash: [1.8, 1.2], clipped: true }]; // prettier-ignore
+    return [{ kind: 'path', d: linePath(points), stroke: PAPER.ink, strokePt: 0.5, clipped: true }]; // prettier-ignore
   });
   const legend = legendMarks(
     axes,

@@ -39,7 +39,7 @@ export function lineDirections({ groups, conditions }: EstimateContext): string 
   const { low, high } = order.ratio(0);
   if (low === null || high === null) return '';
   if (high < -ORDER_LEAST)
-    return ' The lines lie across the flow by preference: a formula for isotropic ones gives up to 27 % too much.';
+    return ' The lines lie across the flow by preference: a formula for isotropic ones gives a quarter to nearly a half too much.';
   if (low > ORDER_LEAST)
     return ' The lines lie along the flow by preference, which a formula for isotropic ones doesn’t allow for.';
   return '';

@@ -53,8 +53,9 @@ export async function timeUntilDrawn(
     const seen = await takeSeen(page);
     inputs.push(...seen.inputs);
     drawings.push(...seen.drawings);
-    const drawn = drawings.find(shows);
-    if (drawn && inputs.length > 0) return drawn.endMs - inputs[0];
+    // What was drawn before the act began is an answer to something else.
+    const drawn = drawings.find((drawing) => drawing.endMs > inputs[0] && shows(drawing));
+    if (drawn) return drawn.endMs - inputs[0];
     await page.waitForTimeout(20);
   }
   throw new Error('What was done was never drawn.');

@@ -72,11 +72,10 @@ export async function editorTimes(
 
   note('Splitting');
   const split: number[] = [];
+  let version = 0;
   for (let n = 0; n < ROUNDS + WARM_UP; n += 1) {
     await page.keyboard.press('.');
-    await page.waitForTimeout(60);
-    const { drawings } = await takeSeen(page);
-    const version = Math.max(0, ...drawings.map((drawing) => drawing.version));
+    version = Math.max(version, await versionAtRest(page));
     const began = await splitOnce(page, version);
     if (began !== null) split.push(began);
   }
@@ -93,6 +92,16 @@ export async function editorTimes(
       { name: 'from one drawing to the next while the mouse drags', ms: frames.between },
     ],
   };
+}
+
+/** Waits until nothing was drawn for a while, as after an answer of the server. @returns the last version drawn */
+async function versionAtRest(page: Page): Promise<number> {
+  for (let version = 0; ; ) {
+    await page.waitForTimeout(120);
+    const { drawings } = await takeSeen(page);
+    if (drawings.length === 0) return version;
+    version = Math.max(version, ...drawings.map((drawing) => drawing.version));
+  }
 }
 
 const chosenNow = (page: Page): Promise<number | null> =>

@@ -18,6 +18,7 @@ import {
   openWindow,
   signIn,
   type Visit,
+  WIDTHS,
 } from './browser';
 import { analysisId, browser, lab, server } from './review-day';
 
@@ -177,6 +178,31 @@ export function theyJudge(): void {
     expect(
       visit.complaints.filter((text) => !/ERR_INTERNET_DISCONNECTED|Failed to fetch/.test(text)),
     ).toEqual([]);
+  });
+
+  it('on a phone the verdicts stand at the foot of the window, the reasons above them', async () => {
+    const { context, page } = await openWindow(browser, { size: 'narrow', theme: 'dark' });
+    await signIn(page, lab.people.annotator);
+    const [{ id }] = await selectRows<{ id: string }>(
+      'SELECT id FROM candidates WHERE analysis_id = $1 ORDER BY event LIMIT 1',
+      [analysisId],
+    );
+    await page.goto(`/review/${analysisId}?candidate=${id}`);
+    await heading(page)
+      .getByText(/Candidate \d+/)
+      .waitFor({ timeout: 60_000 });
+    const no = page.getByRole('button', { name: /No$/ });
+    const foot = await no.boundingBox();
+    expect(foot!.y + foot!.height).toBeLessThanOrEqual(WIDTHS.narrow.height);
+    expect(foot!.y).toBeGreaterThan(WIDTHS.narrow.height - 80);
+    await keepPicture(page, 'review-desk-narrow-dark.png');
+    await no.click();
+    const reason = await page.getByRole('button', { name: 'the spots merge' }).boundingBox();
+    expect(reason!.y + reason!.height).toBeLessThanOrEqual(foot!.y + 1);
+    await keepPicture(page, 'review-desk-narrow-reasons-dark.png');
+    await expectNoSidewaysScroll(page);
+    await expectNoSeriousViolation(page, 'light', 'the desk on a phone');
+    await context.close();
   });
 
   it('a second reader disagrees on two; the principal investigator is told, with the strips, and settles', async () => {
