@@ -3,7 +3,9 @@ import { CHANGE_POSITIONS_MIN, PIECE_POSITIONS_MIN } from '../populations/change
 import type { Pieces } from '../populations/pieces';
 import { FREE } from '../populations/codes';
 import type { Conditions } from '../types';
+import { BLOCKS, blockOf } from './image-blocks';
 import { notUsable, type DensityResult } from './interval';
+import { widenForFewLines } from './line-spread';
 
 /** Captures below which a rate is not worth its name. */
 const CAPTURES_LEAST = 5;
@@ -15,6 +17,8 @@ export interface FreeFlights {
   captures: number;
   /** Path against the lines on which a capture would have been seen, m. */
   pathM: number;
+  /** Relative standard error of captures per path: one line catches several tracers, at about the same place. */
+  relativeError: number;
 }
 
 /**
@@ -24,18 +28,20 @@ export interface FreeFlights {
  * the maximum-likelihood estimate of an exponential law).
  *
  * @param driftPx common drift of trapped tracers, px per frame.
+ * @param image size in px: what happens in one block of it may be the work of one line.
  */
 export function freeFlights(
   { tracks, track, population }: Pieces,
   changes: readonly StateChange[],
   conditions: Pick<Conditions, 'pixelSize_m'>,
   driftPx: readonly [number, number],
+  image: { width: number; height: number },
 ): FreeFlights {
   const caught = new Set(
     changes.filter(({ kind }) => kind === 'capture').map((c) => `${c.track} ${c.frame}`),
   );
-  let captures = 0;
-  let pathPx = 0;
+  const captures = new Float64Array(BLOCKS);
+  const pathPx = new Float64Array(BLOCKS);
   for (let k = 0; k < tracks.count; k++) {
     if (population[k] !== FREE) continue;
     const from = tracks.start[k];
@@ -48,11 +54,31 @@ export function freeFlights(
     const steps = end - 1 - from;
     const vx = (tracks.xPx[end - 1] - tracks.xPx[from]) / steps - driftPx[0];
     const vy = (tracks.yPx[end - 1] - tracks.yPx[from]) / steps - driftPx[1];
-    pathPx += Math.hypot(vx, vy) * frames;
-    if (ends) captures++;
+    const block = blockOf(tracks.xPx[end - 1], tracks.yPx[end - 1], image);
+    pathPx[block] += Math.hypot(vx, vy) * frames;
+    if (ends) captures[block]++;
   }
-  return { captures, pathM: pathPx * conditions.pixelSize_m };
+  const total = sumOf(captures);
+  const path = sumOf(pathPx);
+  return {
+    captures: total,
+    pathM: path * conditions.pixelSize_m,
+    relativeError: relativeErrorOf(captures, pathPx, total / path),
+  };
 }
+
+/**
+ * Of a rate of captures, from its scatter between blocks of the image (delta method for a ratio, Cochran 1977), at
+ * least that of a Poisson process, widened as Student's t for few blocks with captures.
+ */
+function relativeErrorOf(captures: Float64Array, path: Float64Array, rate: number): number {
+  const count = sumOf(captures);
+  if (count === 0) return Number.NaN;
+  const scatter = Math.hypot(...captures.map((n, block) => n - rate * path[block])) / count;
+  return widenForFewLines(Math.max(scatter, 1 / Math.sqrt(count)), captures);
+}
+
+const sumOf = (values: Float64Array): number => values.reduce((sum, value) => sum + value, 0);
 
 /**
  * L = 2 / (pi b s) from the mean free path s of tracers that are caught within b of an isotropic line (a
@@ -67,7 +93,7 @@ export function freePathEstimate(
   if (!flights) {
     return notUsable(method, 'Free and trapped tracers are not told apart, so no capture is either.');
   }
-  const { captures, pathM } = flights;
+  const { captures, pathM, relativeError } = flights;
   const diameterM = conditions.tracer?.diameter_m ?? null;
   const freePathM = captures > 0 ? pathM / captures : null;
   const inputs = {
@@ -92,8 +118,7 @@ export function freePathEstimate(
   return {
     method,
     valueM2: 2 / (Math.PI * (diameterM / 2) * freePathM),
-    // Captures are a Poisson process along the path.
-    statistical: 1 / Math.sqrt(captures),
+    statistical: relativeError,
     systematic: LN_RADIUS_ERROR,
     inputs,
     note: 'Mean path of free tracers until a line catches them; the capture radius is taken for the tracer’s own and is unknown by a factor of 2 to 5.',

@@ -66,15 +66,20 @@ export function lineDensityEstimates(
   const cautions = context ? lineDirections(context) + darkLines(context) : '';
   const results: DensityResult[] = BY_TRACERS.map(([method, estimate]) => {
     const result = context ? estimate(context) : notUsable(method, refusal ?? '');
-    const concerned = result.valueM2 !== null && BY_ISOTROPY.includes(method);
-    return concerned ? { ...result, note: result.note + cautions } : result;
+    return BY_ISOTROPY.includes(method) ? withCautions(result) : result;
   });
-  const flights = captures && freeFlights(captures.pieces, captures.changes, conditions, pool.driftPx);
+  const flights = captures && freeFlights(captures.pieces, captures.changes, conditions, pool.driftPx, image);
   results.push(freePathEstimate(flights, conditions));
   results.push(notUsable('marked-chains', NO_MARKS));
   results.push(heatFluxPrior(conditions));
-  results.push(combine(results));
+  const byIsotropy = results.some((result) => result.valueM2 !== null && BY_ISOTROPY.includes(result.method));
+  const combined = combine(results);
+  results.push(byIsotropy ? withCautions(combined) : combined);
   return { estimates: results.flatMap(asEstimates), line: groups.line, context };
+
+  function withCautions(result: DensityResult): DensityResult {
+    return result.valueM2 === null ? result : { ...result, note: result.note + cautions };
+  }
 
   function shared(): EstimateContext {
     const h = conditions.sheetThickness_m;

@@ -95,7 +95,7 @@ export const LINE_DENSITY_CASES: readonly LineDensityCase[] = [
     lineDensityM2: 1e7,
     scene: { acrossFlow: true },
     holds: [],
-    broken: { methods: BY_COUNTING, says: /across the flow by preference/ },
+    broken: { methods: [...BY_COUNTING, 'combined'], says: /across the flow by preference/ },
   },
   {
     name: 'one population',

@@ -96,7 +96,7 @@ export async function editorTimes(
 
 /** Waits until nothing was drawn for a while, as after an answer of the server. @returns the last version drawn */
 async function versionAtRest(page: Page): Promise<number> {
-  for (let version = 0; ; ) {
+  for (let version = 0; ;) {
     await page.waitForTimeout(120);
     const { drawings } = await takeSeen(page);
     if (drawings.length === 0) return version;

@@ -87,21 +87,70 @@ describe('captures', () => {
 
   test('and the path until then give the line density back', () => {
     const pieces = piecesOf(tracks, found.population, found.changes);
-    const flights = freeFlights(pieces, found.changes, CONDITIONS, [-0.5, 0]);
+    const flights = freeFlights(pieces, found.changes, CONDITIONS, [-0.5, 0], {
+      width: 320,
+      height: 256,
+    });
     const { valueM2, statistical } = freePathEstimate(flights, CONDITIONS);
-    // 1 / sqrt(captures) of chance, and some captures that don't show for long enough.
+    // Chance, and some captures that don't show for long enough.
     expect(Math.abs(Math.log(valueM2! / DENSITY_M2))).toBeLessThan(3.3 * statistical + 0.3);
   });
 });
 
 test('without captures nothing is estimated, and why is said', () => {
-  const none = freePathEstimate({ captures: 1, pathM: 1 }, CONDITIONS);
+  const none = freePathEstimate({ captures: 1, pathM: 1, relativeError: 1 }, CONDITIONS);
   expect(none.valueM2).toBeNull();
   expect(none.note).toMatch(/1 capture .* 5 are needed/);
-  expect(freePathEstimate({ captures: 9, pathM: 1 }, {}).note).toMatch(/diameter/);
+  expect(freePathEstimate({ captures: 9, pathM: 1, relativeError: 0.4 }, {}).note).toMatch(/diameter/);
   // L = 2 / (pi b s): 2 / (pi 1e-6 m x 0.6366 mm) = 1e9 (row 34 of the check values of this estimator).
-  const nine = freePathEstimate({ captures: 9, pathM: 9 * 0.6366198e-3 }, { tracer: { diameter_m: 2e-6 } });
+  const nine = freePathEstimate(
+    { captures: 9, pathM: 9 * 0.6366198e-3, relativeError: 0.4 },
+    { tracer: { diameter_m: 2e-6 } },
+  );
   expectWithin(nine.valueM2!, 1e9, { rel: 1e-6 });
+});
+
+test('captures at one place may be of one line, and tell less than as many at many places', () => {
+  // 144 straight flights of 50 frames, four to a block of 36; where they end is where they may be caught.
+  const flights = (caught: (flight: number) => boolean) => {
+    const points = 50;
+    const count = 144;
+    const at = (of: (flight: number, point: number) => number) =>
+      Float32Array.from({ length: count * points }, (_, p) => of(Math.floor(p / points), p % points));
+    const changes = Array.from({ length: count }, (_, track) => ({
+      track,
+      kind: 'capture' as const,
+      frame: points,
+      lnOdds: 9,
+    }));
+    const zeros = new Float32Array(count * points);
+    const tracks = {
+      count,
+      start: Uint32Array.from({ length: count + 1 }, (_, i) => i * points),
+      frame: Uint32Array.from({ length: count * points }, (_, p) => p % points),
+      xPx: at((flight, point) => 20 + 40 * (Math.floor(flight / 4) % 6) + 0.1 * (point - points)),
+      yPx: at((flight) => 20 + 40 * Math.floor(flight / 24)),
+      sxPx: zeros,
+      syPx: zeros,
+      brightness: zeros,
+      flags: new Uint8Array(count * points),
+    };
+    const pieces = {
+      tracks,
+      track: Uint32Array.from({ length: count }, (_, i) => i),
+      population: new Uint8Array(count).fill(FREE),
+      lnOdds: new Float64Array(count),
+    };
+    const found = changes.filter(({ track }) => caught(track));
+    return freeFlights(pieces, found, { pixelSize_m: 1e-5 }, [0, 0], { width: 240, height: 240 });
+  };
+  const everywhere = flights((flight) => flight % 4 === 0);
+  const atNinePlaces = flights((flight) => flight < 36);
+  expect(everywhere.captures).toBe(36);
+  expect(atNinePlaces.captures).toBe(36);
+  // As a Poisson process: 1 / sqrt(36), and Student's t of 36 blocks.
+  expectWithin(everywhere.relativeError, 1 / 6, { rel: 0.06 });
+  expect(atNinePlaces.relativeError).toBeGreaterThan(1.8 * everywhere.relativeError);
 });
 
 test('features of any piece are those of the piece as a track of its own', () => {
