@@ -72,7 +72,7 @@ export async function expectNoSidewaysScroll(page: Page): Promise<void> {
 /** axe finds nothing that is serious. All rules but that of contrast are the same in both themes: dark is looked at for it. */
 export async function expectNoSeriousViolation(page: Page, theme: Theme, where: string): Promise<void> {
   // No page has a frame, so nothing has to be gathered in a further window.
-  const axe = new AxeBuilder({ page }).setLegacyMode();
+  const axe = new AxeBuilder({ page }).setLegacyMode().options({ resultTypes: ['violations'] });
   const { violations } = await (theme === 'dark' ? axe.withRules('color-contrast') : axe).analyze();
   const serious = violations.filter(({ impact }) => impact === 'serious' || impact === 'critical');
   const words = serious.map(

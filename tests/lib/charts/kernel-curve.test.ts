@@ -68,7 +68,7 @@ describe('a kernel estimate', () => {
     expect(pdfRanges(series, false, 'across')!.y.max).toBeGreaterThanOrEqual(1);
     const hairlines = (one: typeof series) =>
       velocityPdfFigure(86, one, 'across', '')!.marks.filter(
-        (mark) => mark.kind === 'path' && mark.stroke === PAPER.ink && mark.dash !== undefined,
+        (mark) => mark.kind === 'path' && mark.stroke === PAPER.ink && mark.strokePt === 0.5,
       );
     expect(hairlines(series)).toHaveLength(1);
     expect(hairlines([{ ...series[0], kernel: null }])).toHaveLength(0);
