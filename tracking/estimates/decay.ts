@@ -1,6 +1,6 @@
 import { createRandom, mixSeed } from '../random';
 import { KAPPA_M2_S } from '../units';
-import { BLOCKS, blockOf } from './image-blocks';
+import { BLOCKS, blockOfTrack } from './image-blocks';
 import type { EstimateContext } from './context';
 import { lnSpread, notUsable, type DensityResult } from './interval';
 import { fitRelativeDecay } from './relative-decay';
@@ -55,7 +55,9 @@ export function decayEstimate(
     duration: { value: durationS, unit: 's' },
   };
   // Tracers of a line go together; so do those of a line that leaves the sheet and comes back elsewhere in it.
-  const draws = [byLine, countsBy(placeOf, BLOCKS)].map((counts, of) => ratesOfDraws(counts, of));
+  const draws = [byLine, countsBy((i) => blockOfTrack(tracks, i, image), BLOCKS)].map((counts, of) =>
+    ratesOfDraws(counts, of),
+  );
   const errors = draws.map(spreadOf);
   const worse = errors[1] > errors[0] ? 1 : 0;
   const [rates, error] = [draws[worse], errors[worse]];
@@ -82,11 +84,6 @@ export function decayEstimate(
         row[Math.floor((tracks.frame[p] * windows) / image.frames)]++;
     }
     return counts.filter((row) => row.some((n) => n > 0));
-  }
-
-  function placeOf(track: number): number {
-    const middle = (tracks.start[track] + tracks.start[track + 1]) >> 1;
-    return blockOf(tracks.xPx[middle], tracks.yPx[middle], image);
   }
 
   /** Rates of clusters drawn with replacement, each as often as a Poisson variable of mean 1 says. */

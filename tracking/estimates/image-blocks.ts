@@ -12,6 +12,16 @@ export function blockOf(xPx: number, yPx: number, image: { width: number; height
 
 export const BLOCKS = BLOCKS_A_SIDE * BLOCKS_A_SIDE;
 
+/** Block in which the middle position of a track stands. */
+export function blockOfTrack(
+  { start, xPx, yPx }: Tracks,
+  track: number,
+  image: { width: number; height: number },
+): number {
+  const middle = (start[track] + start[track + 1]) >> 1;
+  return blockOf(xPx[middle], yPx[middle], image);
+}
+
 /**
  * Standard error of a sum over tracks of which those in one block of the image, at whatever time, may know
  * of each other: a line that leaves the sheet and comes back with other tracers is in the same place.
@@ -26,8 +36,7 @@ export function blockError(
   const sums = new Float64Array(BLOCKS);
   part.forEach((of, i) => {
     if (of === 0) return;
-    const middle = (tracks.start[i] + tracks.start[i + 1]) >> 1;
-    sums[blockOf(tracks.xPx[middle], tracks.yPx[middle], image)] += of;
+    sums[blockOfTrack(tracks, i, image)] += of;
   });
   return Math.hypot(...sums);
 }
