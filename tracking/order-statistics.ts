@@ -4,15 +4,49 @@ export type EachValue = (visit: (value: number) => void) => void;
 const DIGIT_BITS = 16;
 const DIGITS = 4;
 const SIGN = 0x80000000;
+/** Lists of up to so many values are sorted: half a megabyte. */
+const HELD_MOST = 1 << 16;
 
 /**
- * The values that would stand at given places of the sorted list, exactly, without holding the list: it is gone
- * through four times, each time counting 16 further bits of the values near the places (a radix selection).
+ * The values that would stand at given places of the sorted list, exactly, without holding a long list.
  * Order is that of typed arrays: -0 before 0, NaN last.
  *
- * @param places from 0; none may lie beyond the list.
+ * @param places from 0. @throws RangeError for a place beyond the list.
  */
 export function orderStatistics(each: EachValue, places: readonly number[]): number[] {
+  const held = heldValues(each);
+  if (!held) return selected(each, places);
+  held.sort();
+  return places.map((place) => {
+    if (place >= held.length) throw beyond(place, held.length);
+    return held[place];
+  });
+}
+
+/** The values of a list that is short; null for a long one. */
+function heldValues(each: EachValue): Float64Array | null {
+  let values = new Float64Array(1024);
+  let count = 0;
+  each((value) => {
+    if (count === values.length && count < HELD_MOST) {
+      const more = new Float64Array(2 * count);
+      more.set(values);
+      values = more;
+    }
+    if (count < values.length) values[count] = value;
+    count++;
+  });
+  return count <= values.length ? values.subarray(0, count) : null;
+}
+
+const beyond = (place: number, count: number) =>
+  new RangeError(`There is no place ${place} among ${count} values.`);
+
+/**
+ * By radix selection: the list is gone through four times, each time counting 16 further bits of the values near the
+ * places.
+ */
+function selected(each: EachValue, places: readonly number[]): number[] {
   const number = new Float64Array(1);
   const halves = new Uint32Array(number.buffer);
   // Which half holds the sign depends on the machine.
@@ -63,7 +97,7 @@ function narrowed({ highKey, lowKey, wanted }: Group, counts: Uint32Array, digit
     let below = 0;
     let bin = 0;
     while (bin < counts.length && below + counts[bin] <= place) below += counts[bin++];
-    if (bin === counts.length) throw new RangeError(`There is no place ${place} among ${below} values.`);
+    if (bin === counts.length) throw beyond(place, below);
     let group = groups.get(bin);
     if (!group) {
       const isHigh = digit < DIGITS / 2;

@@ -1,4 +1,4 @@
-import { nthElement } from '../image-model/nth-element';
+import { nthElement } from '../nth-element';
 
 /** About so many pixels are looked at, evenly spread. */
 const SAMPLES = 8000;

@@ -7,7 +7,7 @@ import {
   type BlockGrid,
 } from './block-grid';
 import { framePairs, type FramePair } from './frame-pairs';
-import { nthElement } from './nth-element';
+import { nthElement } from '../nth-element';
 import { binGrid, markSuspects, SUSPECT_LEVEL, type BinGrid, type ScanSums } from './pair-scan';
 import { roughLevel } from './rough-level';
 import type { PairKernels, PairShifts } from '../kernels/pair-kernels';

@@ -1,6 +1,6 @@
 import { blockGrid, blockStart, fillGaps, type BlockGrid } from './block-grid';
 import type { FramePair } from './frame-pairs';
-import { nthElement } from './nth-element';
+import { nthElement } from '../nth-element';
 
 /** Stretches of the recording that get a level of their own, so that a drifting sheet is followed. */
 const STRETCHES_MOST = 4;

@@ -1,5 +1,5 @@
 import { lonePeaks } from './lone-peaks';
-import { nthElement } from './nth-element';
+import { nthElement } from '../nth-element';
 import { selfSimilarSigma } from './self-similarity';
 import type { SpotFinder, SpotFrames, SpotWindow } from './spot-frames';
 import { WidthFit } from './width-fit';

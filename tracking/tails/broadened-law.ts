@@ -20,12 +20,13 @@ export type SizeKind = 'component' | 'speed';
 export function noisyLaw(alpha: number, noiseShare: number, kind: SizeKind): NoisyLaw {
   const s2 = noiseShare * noiseShare;
   // Of a speed the Laplacian of r^-(alpha + 1), the density per area, stands in for the second derivative.
-  const [second, fourth] =
-    kind === 'speed'
-      ? [(alpha + 1) ** 2 / 2, ((alpha + 1) * (alpha + 3)) ** 2 / 8]
-      : [(alpha * (alpha + 1)) / 2, (alpha * (alpha + 1) * (alpha + 2) * (alpha + 3)) / 8];
-  const law = { alpha, second: second * s2, fourth: fourth * s2 * s2 };
-  return { ...law, norm: 1 / (alpha - 1) + law.second / (alpha + 1) + law.fourth / (alpha + 3) };
+  const isSpeed = kind === 'speed';
+  const second = isSpeed ? (s2 * (alpha + 1) ** 2) / 2 : (s2 * alpha * (alpha + 1)) / 2;
+  const fourth = isSpeed
+    ? (s2 * (alpha + 1) * (alpha + 3)) ** 2 / 8
+    : (s2 * s2 * alpha * (alpha + 1) * (alpha + 2) * (alpha + 3)) / 8;
+  const norm = 1 / (alpha - 1) + second / (alpha + 1) + fourth / (alpha + 3);
+  return { alpha, second, fourth, norm };
 }
 
 /** Share of the law beyond u = v / from >= 1, given u^-2 and u^(1 - alpha). */
@@ -37,29 +38,37 @@ export const shareBeyond = (
   (power * (1 / (alpha - 1) + perSquare * (second / (alpha + 1) + (perSquare * fourth) / (alpha + 3)))) /
   norm;
 
-/** Mean of ln u under the law. */
-const meanLn = ({ alpha, second, fourth, norm }: NoisyLaw): number =>
-  (1 / (alpha - 1) ** 2 + second / (alpha + 1) ** 2 + fourth / (alpha + 3) ** 2) / norm;
+/** Inverse of the mean of ln u under the law of the exponent 1 + x; grows nearly as x. */
+function perMeanLn(x: number, noiseShare: number, kind: SizeKind): number {
+  const { alpha, second, fourth, norm } = noisyLaw(1 + x, noiseShare, kind);
+  return norm / (1 / (x * x) + second / (alpha + 1) ** 2 + fourth / (alpha + 3) ** 2);
+}
 
 const ROUNDS = 30;
 const EXACT = 1e-9;
+const LEAST = 1e-3;
 
 /**
- * Exponent at which the law has a given mean of ln(v / from), by repeating alpha - 1 = (its part without noise):
- * without noise 1 + 1 / mean, the estimate of maximum likelihood.
+ * Exponent at which the law has a given mean of ln(v / from), by the secant rule: without noise 1 + 1 / mean, the
+ * estimate of maximum likelihood.
  *
  * @returns Infinity where the mean is 0.
  */
 export function exponentOf(mean: number, noiseShare: number, kind: SizeKind): number {
   if (!(mean > 0)) return Infinity;
-  let alpha = 1 + 1 / mean;
-  if (!(noiseShare > 0)) return alpha;
+  const wanted = 1 / mean;
+  if (!(noiseShare > 0)) return 1 + wanted;
+  let x = wanted;
+  let value = perMeanLn(x, noiseShare, kind);
+  let slope = value / x;
   for (let round = 0; round < ROUNDS; round++) {
-    // The mean falls nearly as 1 / (alpha - 1): a step in proportion is nearly Newton's.
-    const next = 1 + (alpha - 1) * (meanLn(noisyLaw(alpha, noiseShare, kind)) / mean);
-    const step = Math.abs(next - alpha);
-    alpha = Math.max(1 + 1e-3, next);
-    if (step < EXACT) break;
+    const next = Math.max(LEAST, x + (wanted - value) / slope);
+    const step = next - x;
+    if (Math.abs(step) < EXACT) return 1 + next;
+    const there = perMeanLn(next, noiseShare, kind);
+    if (there !== value) slope = (there - value) / step;
+    x = next;
+    value = there;
   }
-  return alpha;
+  return 1 + x;
 }

@@ -1,4 +1,4 @@
-import { sortedQuantile } from '../quantile';
+import { quantileAmong } from '../quantile';
 
 /** Zero of n samples still allows 3/n at 95 % (rule of three). */
 const RULE_OF_THREE = 3;
@@ -46,10 +46,10 @@ export function bootstrapBand(
   const low: number[] = [];
   const high: number[] = [];
   for (let b = 0; b < bins; b++) {
-    const sorted = densities.subarray(b * draws, b * draws + kept).sort();
-    low.push(sortedQuantile(sorted, 0.025));
-    const empty = sorted[kept - 1] === 0;
-    high.push(empty ? RULE_OF_THREE / (samples * widths[b]) : sortedQuantile(sorted, 0.975));
+    const ofBin = densities.subarray(b * draws, b * draws + kept);
+    low.push(quantileAmong(ofBin, kept, 0.025));
+    const isEmpty = !ofBin.some((density) => density > 0);
+    high.push(isEmpty ? RULE_OF_THREE / (samples * widths[b]) : quantileAmong(ofBin, kept, 0.975));
   }
   return { low, high };
 }

@@ -1,6 +1,6 @@
 import { describe, expect, test } from 'vitest';
 import { blockGrid, blockStart, fillGaps, interpolateBlocks } from '@/tracking/image-model/block-grid';
-import { nthElement } from '@/tracking/image-model/nth-element';
+import { nthElement } from '@/tracking/nth-element';
 import { smoothTable } from '@/tracking/image-model/smooth-table';
 import { createRandom } from '@/tracking/random';
 import { expectWithin } from '@/tests/helpers/expect-within';
