@@ -37,9 +37,16 @@ export function addToGrid(counts: Float32Array, width: number, grid: SquareGrid,
 
 /** The picture's transform, without its mean, faded out towards the edges (Hann) so that they draw no lines. */
 export function spectrum(sums: Float64Array, side: number): { re: Float64Array; im: Float64Array } {
-  const mean = sums.reduce((sum, value) => sum + value, 0) / sums.length;
+  let total = 0;
+  for (let i = 0; i < sums.length; i++) total += sums[i]!;
+  const mean = total / sums.length;
   const fade = Float64Array.from({ length: side }, (_, i) => Math.sin((Math.PI * (i + 0.5)) / side) ** 2);
-  const re = Float64Array.from(sums, (v, i) => (v - mean) * fade[i % side]! * fade[Math.floor(i / side)]!);
+  const re = new Float64Array(sums.length);
+  for (let row = 0, i = 0; row < side; row++) {
+    for (let column = 0; column < side; column++, i++) {
+      re[i] = (sums[i]! - mean) * fade[column]! * fade[row]!;
+    }
+  }
   const im = new Float64Array(re.length);
   transformSquare(re, im, side, -1);
   return { re, im };
@@ -63,7 +70,7 @@ function phaseCorrelation(a: Spectrum, b: Spectrum, side: number): Float64Array 
   for (let i = 1; i < re.length; i++) {
     const x = b.re[i]! * a.re[i]! + b.im[i]! * a.im[i]!;
     const y = b.im[i]! * a.re[i]! - b.re[i]! * a.im[i]!;
-    const size = Math.hypot(x, y);
+    const size = Math.sqrt(x * x + y * y);
     if (size === 0) continue;
     const w = (weight[i % side]! * weight[Math.floor(i / side)]!) / size;
     re[i] = x * w;
@@ -90,10 +97,11 @@ export function pictureShift(a: Spectrum, b: Spectrum, side: number): { x: numbe
   const correlation = phaseCorrelation(a, b, side);
   let top = 0;
   let squares = 0;
-  correlation.forEach((value, i) => {
+  for (let i = 0; i < correlation.length; i++) {
+    const value = correlation[i]!;
     if (value > correlation[top]!) top = i;
     squares += value * value;
-  });
+  }
   const peak = correlation[top]!;
   if (!(peak > PEAK_DEVIATIONS_MIN * Math.sqrt(squares / correlation.length))) return null;
   const at = (x: number, y: number) => correlation[((y + side) % side) * side + ((x + side) % side)]!;
