@@ -4,8 +4,8 @@ export type EachValue = (visit: (value: number) => void) => void;
 const DIGIT_BITS = 16;
 const DIGITS = 4;
 const SIGN = 0x80000000;
-/** Lists of up to so many values are sorted: half a megabyte. */
-const HELD_MOST = 1 << 16;
+/** Lists of up to so many values are sorted: 8 megabytes. */
+const HELD_MOST = 1 << 20;
 
 /**
  * The values that would stand at given places of the sorted list, exactly, without holding a long list.

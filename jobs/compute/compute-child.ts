@@ -1,5 +1,6 @@
 import { spawn, type ChildProcess } from 'node:child_process';
 import { ComputeError } from './compute-error';
+import { engineFlags } from './engine-flags';
 import { residentMB } from './resident-memory';
 import type { FromChild, TaskInput, TaskName, TaskOutput, ToChild } from './tasks';
 
@@ -52,15 +53,11 @@ export class ComputeChild {
     private readonly memoryMB: number,
   ) {
     const heapMB = Math.max(64, Math.floor(memoryMB * 0.75));
-    this.process = spawn(
-      process.execPath,
-      [`--max-old-space-size=${heapMB}`, '--expose-gc', '--enable-source-maps', path],
-      {
-        stdio: ['ignore', 'ignore', 'pipe', 'ipc'],
-        serialization: 'advanced',
-        env: Object.fromEntries(ENVIRONMENT.flatMap((name) => (process.env[name] ? [[name, process.env[name]]] : []))) as NodeJS.ProcessEnv, // prettier-ignore
-      },
-    );
+    this.process = spawn(process.execPath, [...engineFlags(heapMB), path], {
+      stdio: ['ignore', 'ignore', 'pipe', 'ipc'],
+      serialization: 'advanced',
+      env: Object.fromEntries(ENVIRONMENT.flatMap((name) => (process.env[name] ? [[name, process.env[name]]] : []))) as NodeJS.ProcessEnv, // prettier-ignore
+    });
     this.process.on('message', (message) => this.receive(message as FromChild));
     this.process.stderr?.on('data', (data: Buffer) => {
       this.stderr = (this.stderr + data.toString()).slice(-STDERR_KEPT);

@@ -1,11 +1,14 @@
 import { fork } from 'node:child_process';
 import { once } from 'node:events';
 import { fileURLToPath } from 'node:url';
+import { engineFlags } from '@/jobs/compute/engine-flags';
 import type { StackReader } from '@/stacks/open-stack';
 import type { Kernels } from '@/tracking/kernels/kernels';
 import type { Recipe } from '@/tracking/types';
 import { runCore } from './core-run';
 import type { PipelineRun } from './pipeline-run';
+
+const HEAP_MB = 1024;
 
 /** A pipeline of the core in a process of its own. */
 export interface CoreProcess {
@@ -21,6 +24,8 @@ export function startCore(
   kernels: 'auto' | 'plain',
 ): CoreProcess {
   const child = fork(fileURLToPath(new URL('./bench-core.mjs', import.meta.url)), [stackDir, effort], {
+    // As the product starts its own.
+    execArgv: engineFlags(HEAP_MB),
     // Typed arrays arrive as such.
     serialization: 'advanced',
     env: { ...process.env, BEADLINE_KERNELS: kernels },
