@@ -9,11 +9,15 @@ import { piecesOf } from '../populations/pieces';
 import { RECIPE_DEFAULTS } from '../recipe';
 import { SETTLING_S } from '../simulate/beads-on-curved-lines';
 import { wavyVelocityFactor } from '../simulate/local-induction/wavy-velocity';
+import type { Kernels } from '../kernels/kernels';
+import type { Scene } from '../simulate/scene';
+import { standardCamera } from '../simulate/standard-scene';
 import { tangleScene } from '../simulate/tangle-scene';
 import { trueTracks } from '../simulate/true-tracks';
-import type { Conditions, Recipe } from '../types';
+import type { Conditions, Recipe, Tracks } from '../types';
 import { KAPPA_M2_S } from '../units';
 import type { LineDensityCase } from './line-density-cases';
+import { runRecording } from './recording-run';
 
 /** What one simulated tangle gave, over what it was made with. */
 export interface LineDensityTrial {
@@ -78,16 +82,39 @@ const RECIPE: Recipe = {
   closestApproach_m: 4 * PIXEL_M,
 };
 
+/** Error added to the positions of true tracks. */
+const SIGMA_PX = 0.15;
+const SHORTEST_TRACK_FRAMES = 3;
+
+/** What a tangle's tracks are, and the recipe by which they are looked at. */
+export interface TrackedTangle {
+  tracks: Tracks;
+  recipe: Recipe;
+}
+
+/** The true tracks, with errors. */
+export function tracksOfTruth(scene: Scene, seed: number): TrackedTangle {
+  const options = { sigmaPx: SIGMA_PX, seed, shortestTrackFrames: SHORTEST_TRACK_FRAMES };
+  return { tracks: trueTracks(scene, options).tracks, recipe: RECIPE };
+}
+
+/** Tracks of a recording that is rendered, searched and linked; camera and spot size are found. */
+export function tracksOfRecording(scene: Scene, seed: number, kernels?: Kernels): TrackedTangle {
+  const request = { shortestTrackFrames: SHORTEST_TRACK_FRAMES };
+  const { tracks, recipe } = runRecording(scene, standardCamera(seed), request, kernels);
+  const { lagsFrames, bootstrapDraws, closestApproach_m } = RECIPE;
+  return { tracks, recipe: { ...recipe, lagsFrames, bootstrapDraws, closestApproach_m } };
+}
+
 /**
- * Line density from the true tracks of simulated tangles (populations found, not given): one trial
- * per seed and method.
+ * Line density from the tracks of simulated tangles (populations found, not given): one trial per seed and method.
  *
- * @param sigmaPx error added to the tracks' positions.
+ * @param tracksOf true tracks or those of a recording.
  */
 export function lineDensityTrials(
   one: LineDensityCase,
   seeds: readonly number[],
-  sigmaPx = 0.15,
+  tracksOf: (scene: Scene, seed: number) => TrackedTangle = tracksOfTruth,
 ): LineDensityTrial[] {
   const { lineDensityM2, sizePx = SIZE_PX } = one;
   const image = { width: sizePx, height: sizePx, frames: FRAMES };
@@ -122,8 +149,8 @@ export function lineDensityTrials(
       decayPerS,
       seed,
     });
-    const { tracks } = trueTracks(scene, { sigmaPx, seed, shortestTrackFrames: 3 });
-    const found = findPopulations(tracks, image, conditions, RECIPE);
+    const { tracks, recipe } = tracksOf(scene, seed);
+    const found = findPopulations(tracks, image, conditions, recipe);
     const pieces = piecesOf(tracks, found.population, found.changes);
     const { estimates } = lineDensityEstimates(
       pieces.tracks,
@@ -131,7 +158,7 @@ export function lineDensityTrials(
       found.summary.note,
       image,
       conditions,
-      RECIPE,
+      recipe,
       { pieces, changes: found.changes },
     );
     // The prior speaks of the heat flux, from which the scene's lines are not made.
