@@ -8,6 +8,13 @@ export interface ScreenTimes {
   ms: number[];
 }
 
+interface Box {
+  x: number;
+  y: number;
+  width: number;
+  height: number;
+}
+
 const ROUNDS = 60;
 const WARM_UP = 8;
 
@@ -39,10 +46,7 @@ export async function editorTimes(
   const pick: number[] = [];
   const box = (await well.boundingBox())!;
   for (let n = 0; n < ROUNDS + WARM_UP; n += 1) {
-    const place = {
-      x: box.x + box.width * (0.25 + 0.5 * ((n * 0.618) % 1)),
-      y: box.y + box.height * (0.25 + 0.5 * ((n * 0.414) % 1)),
-    };
+    const place = placeIn(box, n);
     await page.mouse.move(place.x, place.y);
     await page.keyboard.press('Escape');
     const before = await chosenNow(page);
@@ -74,7 +78,10 @@ export async function editorTimes(
   const split: number[] = [];
   let version = 0;
   for (let n = 0; n < ROUNDS + WARM_UP; n += 1) {
-    await page.keyboard.press('.');
+    // Another place each time: parts of tracks that were split can't be split again in this frame.
+    const place = placeIn(box, n + ROUNDS + WARM_UP);
+    await page.keyboard.press('Escape');
+    await page.mouse.click(place.x, place.y);
     version = Math.max(version, await versionAtRest(page));
     const began = await splitOnce(page, version);
     if (began !== null) split.push(began);
@@ -93,6 +100,12 @@ export async function editorTimes(
     ],
   };
 }
+
+/** The n-th of places that spread evenly over the middle of the picture. */
+const placeIn = (box: Box, n: number) => ({
+  x: box.x + box.width * (0.25 + 0.5 * ((n * 0.618) % 1)),
+  y: box.y + box.height * (0.25 + 0.5 * ((n * 0.414) % 1)),
+});
 
 /** Waits until nothing was drawn for a while, as after an answer of the server. @returns the last version drawn */
 async function versionAtRest(page: Page): Promise<number> {
@@ -126,7 +139,7 @@ async function splitOnce(page: Page, version: number): Promise<number | null> {
   }
 }
 
-async function panFrames(page: Page, box: { x: number; y: number; width: number; height: number }) {
+async function panFrames(page: Page, box: Box) {
   const middle = { x: box.x + box.width / 2, y: box.y + box.height / 2 };
   await page.mouse.move(middle.x, middle.y);
   await page.keyboard.press('+');
