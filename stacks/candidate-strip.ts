@@ -1,6 +1,7 @@
 import { Jimp, loadFont } from 'jimp';
 import { SANS_16_WHITE } from 'jimp/fonts';
 import { type Film, type FilmPath, stripFrames } from '@/lib/review/film';
+import { cutFrame } from './cut-frame';
 import { greyImage } from './grey-image';
 import type { StackReader } from './open-stack';
 import { scaleBar } from './scale-bar';
@@ -55,7 +56,7 @@ export async function makeCandidateStrip(reader: StackReader, strip: CandidateSt
   });
   const font = await loadFont(SANS_16_WHITE);
   for (const [i, frame] of frames.entries()) {
-    const tile = await cutFrame(reader, frame, film, contrast, tilePx);
+    const tile = await tileOf(reader, frame, film, contrast, tilePx);
     const drawn = paths.map((path) => inkPath(path, frame, film, zoom));
     for (const layer of ['casing', 'stroke'] as const) {
       for (const path of drawn) inkTrack(tile.bitmap, path, layer);
@@ -73,16 +74,15 @@ export async function makeCandidateStrip(reader: StackReader, strip: CandidateSt
 }
 
 /** The square of a frame, enlarged so that camera pixels stay squares. */
-async function cutFrame(
+async function tileOf(
   reader: StackReader,
   frame: number,
-  { leftPx, topPx, sizePx }: Film,
+  film: Film,
   { low, high }: CandidateStrip['contrast'],
   tilePx: number,
 ) {
-  const image = greyImage(await reader.readFrame(frame), low, high);
+  const image = greyImage(cutFrame(await reader.readFrame(frame), film), low, high);
   const { data } = await image
-    .extract({ left: leftPx, top: topPx, width: sizePx, height: sizePx })
     .resize({ width: tilePx, height: tilePx, kernel: 'nearest' })
     .toColourspace('srgb')
     .ensureAlpha()

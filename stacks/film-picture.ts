@@ -1,7 +1,9 @@
 import sharp from 'sharp';
+import type { Frame } from '@/tracking/types';
 import { type Film, filmRows } from '@/lib/review/film';
-import { greyImage } from './grey-image';
+import { cutFrame } from './cut-frame';
 import type { StackReader } from './open-stack';
+import { stretchToBytes } from './stretch';
 
 /** Hides no tracer and is small enough to be fetched ahead. */
 const WEBP = { quality: 88, effort: 0 } as const;
@@ -16,17 +18,16 @@ export async function makeFilmPicture(
   { low, high }: { low: number; high: number },
   format: 'webp' | 'png',
 ): Promise<Buffer> {
-  const { firstFrame, frames, leftPx, topPx, sizePx, columns } = film;
+  const { firstFrame, frames, sizePx, columns } = film;
   const [width, height] = [columns * sizePx, filmRows(film) * sizePx];
-  const bytes = Buffer.alloc(width * height);
+  const bytes = new Uint8Array(width * height);
+  let room: Frame | undefined;
   for (let i = 0; i < frames; i++) {
-    const cut = await greyImage(await reader.readFrame(firstFrame + i), low, high)
-      .extract({ left: leftPx, top: topPx, width: sizePx, height: sizePx })
-      .raw()
-      .toBuffer();
+    room = await reader.readFrame(firstFrame + i, room);
+    const cut = stretchToBytes(cutFrame(room, film).counts, low, high);
     const [x, y] = [(i % columns) * sizePx, Math.floor(i / columns) * sizePx];
     for (let row = 0; row < sizePx; row++) {
-      cut.copy(bytes, (y + row) * width + x, row * sizePx, (row + 1) * sizePx);
+      bytes.set(cut.subarray(row * sizePx, (row + 1) * sizePx), (y + row) * width + x);
     }
   }
   const image = sharp(bytes, { raw: { width, height, channels: 1 } }).toColourspace('b-w');
