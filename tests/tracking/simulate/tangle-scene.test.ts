@@ -135,3 +135,22 @@ describe('a tangle scene', () => {
     expectWithin(1.2 * Math.sqrt(KAPPA_M2_S * 0.05), 84.72e-6, { abs: 0.05e-6 });
   });
 });
+
+test('a free decay takes lines away with their tracers, as 1 / (1 + rate t) says', () => {
+  const scene = tangleScene({
+    ...BASE,
+    frames: 201,
+    lineDensityM2: 1e8,
+    freeTracersPerFrame: 0,
+    blinkPerFrame: 0,
+    decayPerS: 2,
+  });
+  const seen = [0, 0];
+  scene.frame.forEach((frame) => {
+    if (frame === 0) seen[0]++;
+    if (frame === 200) seen[1]++;
+  });
+  expect(seen[0]).toBeGreaterThan(500);
+  // A third is left after a second (Vinen 1957); some 400 lines of two tracers scatter the ratio by 0.04.
+  expectWithin(seen[1] / seen[0], 1 / 3, { abs: 0.14 });
+});
