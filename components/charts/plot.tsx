@@ -51,7 +51,14 @@ export function Plot({ x, y, heightPx = 352, children }: PlotProps) {
   return (
     <div style={{ height: heightPx }} className="w-full overflow-hidden">
       <ResponsiveContainer width="100%" height="100%" initialDimension={{ width: 484, height: heightPx }}>
-        <ComposedChart data={ends} margin={MARGIN} accessibilityLayer={false} style={{ overflow: 'visible' }}>
+        <ComposedChart
+          // Another kind of axis is another chart: else its first ticks would meet the scale of the one before.
+          key={`${x.log} ${y.log}`}
+          data={ends}
+          margin={MARGIN}
+          accessibilityLayer={false}
+          style={{ overflow: 'visible' }}
+        >
           <XAxis
             {...shared}
             domain={[x.min, x.max]}
