@@ -229,6 +229,7 @@ class RowWork {
   private readonly residual: Float64Array;
   private readonly solved: Float64Array;
   private readonly mean: Float64Array;
+  private readonly column: Float64Array;
 
   constructor(private readonly dims: number) {
     this.latent = new Float64Array(dims);
@@ -237,6 +238,7 @@ class RowWork {
     this.residual = new Float64Array(dims);
     this.solved = new Float64Array(dims);
     this.mean = new Float64Array(dims);
+    this.column = new Float64Array(dims);
   }
 
   private factorise(data: MixtureData, i: number, c: Component): number {
@@ -262,7 +264,7 @@ class RowWork {
   condition(data: MixtureData, i: number, c: Component): void {
     const { dims } = this;
     this.factorise(data, i, c);
-    const column = new Float64Array(dims);
+    const { column } = this;
     for (let d = 0; d < dims; d++) {
       let shift = 0;
       for (let e = 0; e < dims; e++) shift += c.covariance[d * dims + e] * this.solved[e];
