@@ -4,9 +4,8 @@ import { log } from '@/auth/log';
 import { execute, selectRow, selectRows } from '@/models/queries/select';
 import { forgetUpload, UPLOAD_COLUMNS, type UploadRow } from '@/models/queries/uploads';
 import { uploadsFolder } from '@/models/queries/received-bytes';
-import { sizeAtHome } from '@/jobs/stack-store';
 import { finishUpload } from './finish-upload';
-import { arrivedBytes, bytesFile, homeOf, removeUploadFiles, sizeOf } from './upload-files';
+import { arrivedOf, bytesFile, removeUploadFiles, sizeOf } from './upload-files';
 import { isBeingSent, withUploadLock } from './upload-locks';
 
 /** Files that belong to no upload are left alone for this long: theirs may be about to be written down, ms. */
@@ -38,14 +37,12 @@ async function settle(id: string): Promise<void> {
     [id],
   );
   if (!row) return;
-  const stored = await sizeOf(bytesFile(row.id));
-  const atHome = stored === null ? await sizeAtHome(row.recordingId, homeOf(row)) : null;
-  const complete = (stored !== null && (await arrivedBytes(row.id)) === row.bytes) || atHome === row.bytes;
-  if (complete) {
+  if ((await arrivedOf(row)) === row.bytes) {
     await finishUpload(row);
     log.info({ upload: row.id, recording: row.recordingId }, 'finished upload adopted');
     return;
   }
+  const stored = await sizeOf(bytesFile(row.id));
   if (stored === null || (row.expiresAt !== null && row.expiresAt.getTime() < Date.now())) {
     await removeUploadFiles(row.id);
     await forgetUpload(row);

@@ -8,9 +8,9 @@ import { aboutUpload } from './about-upload';
 import { finishUpload } from './finish-upload';
 import { headersOf, PIECE_TYPE, wholeHeader } from './tus-headers';
 import { passToTus } from './tus-server';
-import { arrivedBytes, bytesFile, dropUnchecked, removeUploadFiles, sizeOf } from './upload-files';
+import { arrivedOf, bytesFile, dropUnchecked, removeUploadFiles, sizeOf } from './upload-files';
 import { withUploadLock } from './upload-locks';
-import { writePiece } from './write-piece';
+import { announcedBytes, assertFits, writePiece } from './write-piece';
 
 /** How long HEAD still answers for an upload that is finished, ms. */
 const FINISHED_ANSWERS_MS = 24 * 3_600_000;
@@ -20,7 +20,7 @@ export async function headOfUpload(request: Request, viewer: Viewer, id: string)
   const row = await ownUpload(viewer, id);
   return aboutUpload(row, async () => {
     assertAnswers(row);
-    const offset = row.state === 'finished' ? row.bytes : await arrivedBytes(id);
+    const offset = row.state === 'finished' ? row.bytes : await arrivedOf(row);
     // All had arrived when the database or the disk failed. Who asks now would take "all there" for the end, and wait
     // for a check that nobody has asked for; a failure is answered instead, so that they ask again.
     if (row.state === 'arriving' && offset === row.bytes) {
@@ -57,14 +57,18 @@ async function patchOwn(request: Request, viewer: Viewer, row: UploadRow): Promi
     await dropUnchecked(row.id);
     // Looked at again under the lock: another sender may have finished it meanwhile.
     const now = await getUpload(viewer.labId, row.id);
-    const offset = now.state === 'finished' ? now.bytes : await arrivedBytes(row.id);
+    const offset = now.state === 'finished' ? now.bytes : await arrivedOf(now);
     if (claimed !== offset) {
       throw new LabError('OFFSET', `Upload-Offset conflict: ${offset} bytes have arrived.`, {
         headers: { 'Upload-Offset': String(offset) },
       });
     }
-    if (now.state === 'finished') {
-      return new Answer(undefined, 204, { ...headersOf(now), 'Upload-Offset': String(offset) });
+    if (offset === now.bytes) {
+      assertFits(now.bytes, offset + announcedBytes(request.headers));
+      // Where nobody could write down that it is finished, this is done now.
+      if (now.state === 'arriving') await finishUpload(now);
+      const headers = headersOf({ ...now, expiresAt: null });
+      return new Answer(undefined, 204, { ...headers, 'Upload-Offset': String(offset) });
     }
     return new Answer(undefined, 204, await writePiece(request, row, offset, 'PATCH', holder));
   });

@@ -34,6 +34,19 @@ export async function arrivedBytes(id: string): Promise<number> {
 }
 
 /**
+ * The same of an upload that is not written down as finished: its bytes may have gone to their recording already
+ * when the database failed.
+ */
+export async function arrivedOf(
+  row: Pick<UploadRow, 'id' | 'recordingId' | 'position' | 'bytes'>,
+): Promise<number> {
+  const isAtHome =
+    (await sizeOf(bytesFile(row.id))) === null &&
+    (await sizeAtHome(row.recordingId, homeOf(row))) === row.bytes;
+  return isAtHome ? row.bytes : arrivedBytes(row.id);
+}
+
+/**
  * Before a piece with a checksum is written: what comes after this byte counts for nothing yet. The note
  * appears whole or not at all: one without its number, on a full disk, would make everything count for nothing.
  */

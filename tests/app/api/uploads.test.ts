@@ -163,6 +163,22 @@ describe('after a crash', () => {
     expect(await models().JobRun.count({ where: { subjectId: recordingId } })).toBe(1);
   });
 
+  it.each([
+    ['HEAD', (location: string) => head(location)],
+    ['an empty piece at its end', (location: string) => patch(location, bytes.length, new Uint8Array(0))],
+  ])('such a file has arrived for its sender too, and %s finishes it', async (_, ask) => {
+    const { location, recordingId, id } = await begin();
+    await patch(location, 0, bytes.subarray(0, 299_999));
+    await appendFile(arrivingFile(id), bytes.subarray(299_999));
+    await mkdir(join(bench.dataDir, 'stacks', recordingId), { recursive: true });
+    await rename(arrivingFile(id), stackPath(recordingId));
+    const answer = await ask(location);
+    expect([answer.ok, answer.headers.get('upload-offset')]).toEqual([true, String(bytes.length)]);
+    expect((await recording(recordingId)).state).toBe('checking');
+    expect(readFileSync(stackPath(recordingId)).equals(bytes)).toBe(true);
+    expect(await models().JobRun.count({ where: { subjectId: recordingId } })).toBe(1);
+  });
+
   it('expiry takes neither a finished upload nor one whose last byte has arrived', async () => {
     const past = { expiresAt: new Date(Date.now() - 8 * 86_400_000) };
     const finished = await begin();
