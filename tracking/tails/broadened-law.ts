@@ -46,6 +46,7 @@ function perMeanLn(x: number, noiseShare: number, kind: SizeKind): number {
 
 const ROUNDS = 30;
 const EXACT = 1e-9;
+/** Laws that fall more slowly than this above 1 have next to no mean. */
 const LEAST = 1e-3;
 
 /**
