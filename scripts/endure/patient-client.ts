@@ -21,9 +21,11 @@ export class PatientClient {
   /** Answers by status, lost ones as 0. */
   readonly statuses = new Map<number, number>();
 
+  /** @param onFault hears of every answer that the server itself calls its own mistake (500) */
   constructor(
     private readonly origin: string,
     private readonly token: string,
+    private readonly onFault: (sentence: string) => void = () => {},
   ) {}
 
   /** One try. @returns null when no answer came */
@@ -41,6 +43,9 @@ export class PatientClient {
       });
       const body = Buffer.from(await response.arrayBuffer());
       this.note(response.status);
+      if (response.status === 500) {
+        this.onFault(`${init.method ?? 'GET'} ${path} was answered 500: ${body.toString().slice(0, 500)}`);
+      }
       return { status: response.status, headers: response.headers, body };
     } catch {
       this.note(0);

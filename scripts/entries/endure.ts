@@ -103,9 +103,9 @@ async function main(): Promise<void> {
     const ledger = openLedger(say);
     const proxy = await cuttingProxy(product.port);
     const origin = `http://127.0.0.1:${proxy.port}`;
-    const client = new PatientClient(origin, tokens.experimentalist);
-    const annotator = new PatientClient(origin, tokens.annotator);
-    const administrator = new PatientClient(origin, tokens.lab_administrator);
+    const client = new PatientClient(origin, tokens.experimentalist, ledger.say);
+    const annotator = new PatientClient(origin, tokens.annotator, ledger.say);
+    const administrator = new PatientClient(origin, tokens.lab_administrator, ledger.say);
     const campaign = await client.post<{ id: string }>('/api/v1/campaigns', newId(), { name: 'Endurance' });
     const run = await client.post<{ id: string }>(`/api/v1/campaigns/${campaign.id}/runs`, newId(), {
       name: 'Run 1',
