@@ -26,6 +26,12 @@ export function isDatabaseAway(thrown: unknown): boolean {
   return error.original !== undefined && error.original !== thrown && isDatabaseAway(error.original);
 }
 
+/** What went wrong under a question to the bare driver, told apart from any other network's failing. */
+export function asDatabaseFailure(cause: unknown): unknown {
+  const code = cause instanceof Error ? (cause as { code?: unknown }).code : undefined;
+  return NETWORK.has(String(code)) ? new ConnectionError(cause as Error) : cause;
+}
+
 /** Between two tries, ms. */
 const AGAIN_MS = 500;
 

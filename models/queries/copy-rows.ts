@@ -2,6 +2,7 @@ import { Readable } from 'node:stream';
 import { pipeline } from 'node:stream/promises';
 import type { Transaction } from 'sequelize';
 import { from as copyFrom } from 'pg-copy-streams';
+import { asDatabaseFailure } from '../database-away';
 import { rawClient } from '../raw-client';
 
 /** Signature, flags and extension length of PostgreSQL's binary COPY format. */
@@ -100,5 +101,7 @@ export async function copyRows<T>(
   await pipeline(
     Readable.from(pieces(), { objectMode: false }),
     rawClient(transaction).query(copyFrom(text)),
-  );
+  ).catch((cause: unknown) => {
+    throw asDatabaseFailure(cause);
+  });
 }

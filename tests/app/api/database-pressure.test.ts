@@ -1,3 +1,5 @@
+import type { Socket } from 'node:net';
+import type pg from 'pg';
 import { DatabaseError } from 'sequelize';
 import { afterAll, afterEach, beforeAll, describe, expect, it, vi } from 'vitest';
 import { once } from '@/auth/idempotency';
@@ -9,11 +11,16 @@ import type { ListView, ProblemView } from '@/lib/views/common';
 import { getSequelize } from '@/models/database';
 import { isDatabaseAway, untilDatabaseIsBack } from '@/models/database-away';
 import { models } from '@/models';
+import { withRawClient } from '@/models/raw-client';
 import { withRetries } from '@/models/with-retries';
 import { callJson, webSettings } from '../../helpers/call-route';
 import { freshDatabase, type FreshDatabase } from '../../helpers/fresh-database';
 import { makeRecording } from '../../helpers/lab-rows';
 import { makeTestLab, type LabPerson } from '../../helpers/test-lab';
+
+/** The line below the driver, which its types don't show. */
+const streamOf = (client: pg.Client) =>
+  (client as unknown as { connection: { stream: Socket } }).connection.stream;
 
 let database: FreshDatabase;
 let person: LabPerson;
@@ -175,6 +182,20 @@ describe('a database that is away', () => {
     expect(isDatabaseAway(reset)).toBe(false);
     expect(isDatabaseAway({ code: '23505' })).toBe(false);
     expect(isDatabaseAway(null)).toBe(false);
+  });
+
+  it('is told as well when the connection is cut under a question to the bare driver', async () => {
+    const cut = await withRawClient(async (client) => {
+      const question = client.query('SELECT pg_sleep(30)');
+      const reset = Object.assign(new Error('read ECONNRESET'), { code: 'ECONNRESET' });
+      setTimeout(() => streamOf(client).destroy(reset), 50);
+      return question;
+    }).catch((cause: unknown) => cause);
+    expect(isDatabaseAway(cut)).toBe(true);
+    const wrong = await withRawClient((client) => client.query('SELECT nonsense')).catch(
+      (cause: unknown) => cause,
+    );
+    expect(isDatabaseAway(wrong)).toBe(false);
   });
 
   it('is waited for as long as it was said, and other failures are not', async () => {
