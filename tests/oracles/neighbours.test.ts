@@ -88,7 +88,7 @@ test('tracks that come within reach are just those that comparing all tracks in 
     const reach = 1 + 6 * random.uniform();
     const meetings = closePairs(tracks, chosen, { width: 60, height: 60, frames }, reach);
     const found = new Map(
-      meetings.map(({ trackA, trackB, separationPx }) => [`${trackA} ${trackB}`, separationPx]),
+      [...meetings].map(({ trackA, trackB, separationPx }) => [`${trackA} ${trackB}`, separationPx]),
     );
     expect(found.size).toBe(meetings.length);
     for (let a = 0; a < count; a++) {

@@ -1,7 +1,7 @@
 import type { EstimateContext } from '../estimates/context';
 import { Z95 } from '../normal-tail';
 import { FREE, TRAPPED } from '../populations/codes';
-import { ClusteredRatios } from '../resampling/clustered-ratios';
+import { sumClusters } from '../resampling/sum-clusters';
 import { trackSlice } from '../track-slice';
 import { POINT_BRIDGED, type Conditions, type Tracks } from '../types';
 import { alongAcross, trackVelocities, unitFlow } from '../velocities';
@@ -52,25 +52,19 @@ export function channelProfiles(
   const areaM2 = areas(image, stripOf, px);
 
   const velocities = (code: number, clusterOf: (track: number) => number) => {
-    const sums = new Map<number, { sum: Float64Array; count: Float64Array }>();
-    for (let i = 0; i < tracks.count; i++) {
-      if (population[i] !== code) continue;
+    const own = (i: number) => (population[i] === code ? clusterOf(i) : null);
+    const ratios = sumClusters(STRIPS, tracks.count, own, (i, sum, count) => {
       const slice = trackSlice(tracks, i);
       const v = trackVelocities(slice, lagFrames, conditions);
-      const key = clusterOf(i);
-      let row = sums.get(key);
-      if (!row) sums.set(key, (row = { sum: new Float64Array(STRIPS), count: new Float64Array(STRIPS) }));
       for (let k = 0; k < v.frame.length; k++) {
         const at = v.frame[k] - slice.frame[0];
         const to = at + lagFrames;
         const strip = stripOf((slice.xPx[at] + slice.xPx[to]) / 2, (slice.yPx[at] + slice.yPx[to]) / 2);
         if (strip < 0 || strip >= STRIPS) continue;
-        row.sum[strip] += alongAcross(v.vxMS[k], v.vyMS[k], flow)[0];
-        row.count[strip]++;
+        sum[strip] += alongAcross(v.vxMS[k], v.vyMS[k], flow)[0];
+        count[strip]++;
       }
-    }
-    const ratios = new ClusteredRatios(STRIPS);
-    for (const { sum, count } of sums.values()) ratios.add(sum, count);
+    });
     return seriesOf(
       Array.from({ length: STRIPS }, (_, c): SeriesPoint => {
         const { value, low, high } = ratios.ratio(c);
@@ -78,21 +72,14 @@ export function channelProfiles(
       }),
     );
   };
-  const perArea = (takes: (track: number) => boolean, clusterOf: (track: number) => number) => {
-    const rows = new Map<number, Float64Array>();
-    for (let i = 0; i < tracks.count; i++) {
-      if (!takes(i)) continue;
-      const key = clusterOf(i);
-      let row = rows.get(key);
-      if (!row) rows.set(key, (row = new Float64Array(STRIPS)));
+  const perArea = (clusterOf: (track: number) => number | null) => {
+    const sums = sumClusters(STRIPS, tracks.count, clusterOf, (i, _, count) => {
       for (let p = tracks.start[i]; p < tracks.start[i + 1]; p++) {
         if (tracks.flags[p] & POINT_BRIDGED) continue;
         const strip = stripOf(tracks.xPx[p], tracks.yPx[p]);
-        if (strip >= 0 && strip < STRIPS) row[strip]++;
+        if (strip >= 0 && strip < STRIPS) count[strip]++;
       }
-    }
-    const sums = new ClusteredRatios(STRIPS);
-    for (const row of rows.values()) sums.add(row, row);
+    });
     return Array.from({ length: STRIPS }, (_, c): SeriesPoint => {
       const { value, relativeError } = sums.total(c);
       if (!(areaM2[c] > 0) || !(value > 0)) return UNKNOWN;
@@ -105,7 +92,7 @@ export function channelProfiles(
   const lineOf = (track: number) => line[track];
   const own = (track: number) => track;
   const scale = densityScale(context);
-  const trapped = perArea((i) => population[i] === TRAPPED, lineOf);
+  const trapped = perArea((i) => (population[i] === TRAPPED ? line[i] : null));
   return {
     placeM: Array.from(
       { length: STRIPS },
@@ -115,12 +102,7 @@ export function channelProfiles(
     widthM: axis.widthPx === null ? null : axis.widthPx * px,
     freeAlongMS: velocities(FREE, own),
     trappedAlongMS: velocities(TRAPPED, lineOf),
-    spotsPerAreaM2: seriesOf(
-      perArea(
-        () => true,
-        (i) => (line[i] >= 0 ? -1 - line[i] : i),
-      ),
-    ),
+    spotsPerAreaM2: seriesOf(perArea((i) => (line[i] >= 0 ? -1 - line[i] : i))),
     densityM2:
       scale === null
         ? null

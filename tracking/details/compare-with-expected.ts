@@ -8,7 +8,8 @@ import {
 } from '../flow/steady-tangle';
 import { Z95 } from '../normal-tail';
 import { FREE, TRAPPED } from '../populations/codes';
-import { ClusteredRatios, widthOf } from '../resampling/clustered-ratios';
+import { widthOf } from '../resampling/clustered-ratios';
+import { sumClusters } from '../resampling/sum-clusters';
 import { trackSlice } from '../track-slice';
 import type { Conditions, Tracks } from '../types';
 import { alongAcross, trackVelocities, unitFlow } from '../velocities';
@@ -178,17 +179,12 @@ function meanAlong(
   flow: readonly [number, number],
   lagFrames: number,
 ) {
-  const rows = new Map<number, [number, number]>();
-  for (let i = 0; i < tracks.count; i++) {
-    if (population[i] !== code) continue;
+  const own = (i: number) => (population[i] === code ? clusterOf(i) : null);
+  const sums = sumClusters(1, tracks.count, own, (i, sum, count) => {
     const v = trackVelocities(trackSlice(tracks, i), lagFrames, conditions);
-    const row = rows.get(clusterOf(i)) ?? [0, 0];
-    for (let k = 0; k < v.frame.length; k++) row[0] += alongAcross(v.vxMS[k], v.vyMS[k], flow)[0];
-    row[1] += v.frame.length;
-    rows.set(clusterOf(i), row);
-  }
-  const sums = new ClusteredRatios(1);
-  for (const [sum, count] of rows.values()) sums.add([sum], [count]);
+    for (let k = 0; k < v.frame.length; k++) sum[0] += alongAcross(v.vxMS[k], v.vyMS[k], flow)[0];
+    count[0] += v.frame.length;
+  });
   const { value, error, clusters } = sums.ratio(0);
   if (!Number.isFinite(error)) return null;
   const half = error * widthOf(clusters);

@@ -4,6 +4,7 @@ import { densityFromTransverse, NOISE_PART_MAX } from '../estimates/line-velocit
 import { Z95 } from '../normal-tail';
 import { FREE, TRAPPED } from '../populations/codes';
 import { ClusteredRatios } from '../resampling/clustered-ratios';
+import { sumClusters } from '../resampling/sum-clusters';
 import { trackSlice } from '../track-slice';
 import type { Conditions, Tracks } from '../types';
 import { alongAcross, trackVelocities, unitFlow } from '../velocities';
@@ -44,8 +45,8 @@ export function tracersOverTime(
 ): OverTime {
   const windows = timeWindows(image.frames, conditions.frameInterval_s);
   const areaM2 = image.width * image.height * conditions.pixelSize_m ** 2;
-  const trapped = perArea(tracks, windows, areaM2, (i) => (population[i] === TRAPPED ? line[i] : -1));
-  const free = perArea(tracks, windows, areaM2, (i) => (population[i] === FREE ? i : -1));
+  const trapped = perArea(tracks, windows, areaM2, (i) => (population[i] === TRAPPED ? line[i] : null));
+  const free = perArea(tracks, windows, areaM2, (i) => (population[i] === FREE ? i : null));
   const densities = context ? [byTracers(context, trapped), byVelocity(context, windows)] : [];
   return {
     timeS: windows.timeS,
@@ -61,22 +62,15 @@ function perArea(
   tracks: Tracks,
   windows: TimeWindows,
   areaM2: number,
-  clusterOf: (track: number) => number,
+  clusterOf: (track: number) => number | null,
 ): SeriesPoint[] {
   const columns = windows.windows;
-  const members = new Map<number, Float64Array>();
-  for (let i = 0; i < tracks.count; i++) {
-    const cluster = clusterOf(i);
-    if (cluster < 0) continue;
-    let row = members.get(cluster);
-    if (!row) members.set(cluster, (row = new Float64Array(columns)));
+  const sums = sumClusters(columns, tracks.count, clusterOf, (i, _, count) => {
     const first = tracks.frame[tracks.start[i]];
     const end = first + tracks.start[i + 1] - tracks.start[i];
     for (let w = windowOf(windows, first); w < columns && windows.from[w] < end; w++)
-      row[w] += Math.min(end, windows.from[w + 1]) - Math.max(first, windows.from[w]);
-  }
-  const sums = new ClusteredRatios(columns);
-  for (const row of members.values()) sums.add(row, row);
+      count[w] += Math.min(end, windows.from[w + 1]) - Math.max(first, windows.from[w]);
+  });
   return Array.from({ length: columns }, (_, w) => {
     const { value, relativeError } = sums.total(w);
     const scaled = value / (windows.from[w + 1] - windows.from[w]) / areaM2;

@@ -1,6 +1,7 @@
-import { closePairs } from '../pairs/close-pairs';
+import { closePairs, pairsOnce } from '../pairs/close-pairs';
 import type { Tracks } from '../types';
 import { pairMotion, type PairMotion } from './pair-motion';
+import { PairMotions } from './pair-motions';
 import type { TrappedPool } from './trapped-pool';
 
 /** Pairs are looked at within this many typical distances of trapped tracers, and a part of the image. */
@@ -19,10 +20,10 @@ export interface LineGroups {
   line: Int32Array;
   lines: number;
   /** Pairs in reach long enough to tell, and the reach, px. */
-  pairs: PairMotion[];
+  pairs: Iterable<PairMotion>;
   reachPx: number;
   /** Pairs in reach that are too short or too still to tell. */
-  untold: PairMotion[];
+  untold: Iterable<PairMotion>;
   /** Chance that two independent tracks keep their separation. */
   wrongChance: number;
   /** Frames that two tracks must share to be told apart or joined. */
@@ -42,28 +43,31 @@ export function lineGroups(
     REACH_DISTANCES * typicalPx,
     REACH_IMAGE_PART * Math.min(image.width, image.height),
   );
-  const seen = new Set<number>();
-  const motions: PairMotion[] = [];
+  const motions = new PairMotions();
   if (pool.tracks > 1) {
-    for (const { trackA, trackB } of closePairs(tracks, pool.chosen, image, reachPx, LOOK_EVERY)) {
-      const key = trackA * tracks.count + trackB;
-      if (seen.has(key)) continue;
-      seen.add(key);
+    const meetings = closePairs(tracks, pool.chosen, image, reachPx, LOOK_EVERY);
+    for (const [trackA, trackB] of pairsOnce(meetings, tracks.count)) {
       const motion = pairMotion(tracks, trackA, trackB, pool.driftPx);
       if (motion) motions.push(motion);
     }
   }
-  let pairs: PairMotion[] = [];
+  const tells = (m: PairMotion) => m.telling && m.measured >= leastFrames;
   let wrongChance = 1;
   let told = false;
   let leastFrames: number = LEAST_FRAMES[0];
   for (const least of LEAST_FRAMES) {
     leastFrames = least;
-    pairs = motions.filter((m) => m.telling && m.measured >= least);
-    if (pairs.length === 0) break;
-    wrongChance = pairs.filter((m) => m.rigidWhenTurned).length / pairs.length;
+    let [telling, wrong, common] = [0, 0, 0];
+    for (const m of motions) {
+      if (!tells(m)) continue;
+      telling++;
+      if (m.rigidWhenTurned) wrong++;
+      common += m.common;
+    }
+    if (telling === 0) break;
+    wrongChance = wrong / telling;
     // Bonds of a tracer at a time: pairs count for the frames they share.
-    const bonds = (2 * pairs.reduce((sum, m) => sum + m.common, 0)) / (pool.perFrame * image.frames);
+    const bonds = (2 * common) / (pool.perFrame * image.frames);
     told = wrongChance * bonds <= WRONG_BONDS_MAX;
     if (told) break;
   }
@@ -73,7 +77,7 @@ export function lineGroups(
     return i;
   };
   if (told) {
-    for (const { rigid, trackA, trackB } of pairs) if (rigid) parent[root(trackB)] = root(trackA);
+    for (const m of motions) if (m.rigid && tells(m)) parent[root(m.trackB)] = root(m.trackA);
   }
   const line = new Int32Array(tracks.count).fill(-1);
   const names = new Map<number, number>();
@@ -83,13 +87,11 @@ export function lineGroups(
     if (!names.has(of)) names.set(of, names.size);
     line[i] = names.get(of) ?? -1;
   }
-  const tells = new Set(pairs);
-  const untold = motions.filter((m) => !tells.has(m));
   return {
     line,
     lines: names.size,
-    pairs: told ? pairs : [],
-    untold,
+    pairs: told ? motions.where(tells) : [],
+    untold: motions.where((m) => !tells(m)),
     reachPx,
     wrongChance,
     leastFrames,

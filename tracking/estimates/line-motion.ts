@@ -1,6 +1,8 @@
 import { trackSlice } from '../track-slice';
+import type { Tracks } from '../types';
 import { alongAcross, trackVelocities, unitFlow } from '../velocities';
 import type { EstimateContext } from './context';
+import type { TrappedPool } from './trapped-pool';
 
 /** Velocities beyond this many widths are left out: they belong to reconnections. */
 const TRIM = 2.5;
@@ -74,34 +76,47 @@ export function transverseMotion(context: EstimateContext): TransverseMotion | n
 function trimmedVelocities(context: EstimateContext, lagFrames: number): TrimmedVelocities | null {
   const { tracks, pool, conditions } = context;
   const flow = unitFlow(conditions);
-  const values: number[] = [];
-  const trackOf: number[] = [];
+  // Velocities of track i: values[from[i] .. from[i + 1] - 1].
+  const from = new Uint32Array(tracks.count + 1);
+  const room = new Float64Array(pointsOf(tracks, pool));
   let noise = 0;
+  let n = 0;
   for (let i = 0; i < tracks.count; i++) {
+    from[i + 1] = n;
     if (pool.chosen[i] !== 1) continue;
     const v = trackVelocities(trackSlice(tracks, i), lagFrames, conditions);
     for (let k = 0; k < v.frame.length; k++) {
-      values.push(flow ? alongAcross(v.vxMS[k], v.vyMS[k], flow)[1] : v.vyMS[k]);
-      trackOf.push(i);
+      room[n++] = flow ? alongAcross(v.vxMS[k], v.vyMS[k], flow)[1] : v.vyMS[k];
       noise += (v.svxMS[k] ** 2 + v.svyMS[k] ** 2) / 2;
     }
+    from[i + 1] = n;
   }
-  const n = values.length;
   if (n < 2 || !Number.isFinite(noise)) return null;
+  const values = room.subarray(0, n);
   noise /= n;
   const { mean, variance, limit, kept } = trimmed(values);
   const influence = new Float64Array(tracks.count);
-  values.forEach((v, i) => {
-    if (Math.abs(v - mean) > limit) return;
-    influence[trackOf[i]] += (v - mean) ** 2 - TRIMMED_VARIANCE * variance;
-  });
   const scale = TRIMMING_GAIN / (TRIMMED_VARIANCE * kept);
-  for (let i = 0; i < influence.length; i++) influence[i] *= scale;
+  for (let i = 0; i < tracks.count; i++) {
+    for (let k = from[i]; k < from[i + 1]; k++) {
+      if (Math.abs(values[k] - mean) > limit) continue;
+      influence[i] += (values[k] - mean) ** 2 - TRIMMED_VARIANCE * variance;
+    }
+    influence[i] *= scale;
+  }
   return { lagFrames, velocities: n, meanMS: mean, limitMS: limit, variance, noise, influence };
 }
 
+/** Points of the trapped tracks, and so the most velocities that they can have. */
+function pointsOf(tracks: Tracks, pool: TrappedPool): number {
+  let points = 0;
+  for (let i = 0; i < tracks.count; i++)
+    if (pool.chosen[i] === 1) points += tracks.start[i + 1] - tracks.start[i];
+  return points;
+}
+
 /** Mean and variance of values of which those beyond 2.5 widths are left out, as of a Gaussian that was not trimmed. */
-export function trimmed(values: readonly number[]): {
+export function trimmed(values: Float64Array): {
   mean: number;
   variance: number;
   limit: number;

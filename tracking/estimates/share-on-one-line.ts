@@ -10,25 +10,26 @@ import type { PairMotion } from './pair-motion';
  * @param line of each track, as far as they are known.
  */
 export function shareOnOneLine(
-  pairs: readonly PairMotion[],
+  pairs: Iterable<PairMotion>,
   line: Int32Array,
   weightOf: (m: PairMotion) => number,
 ): { share: number; pairs: number; error: number } {
   let all = 0;
   let together = 0;
   let asOne = 0;
-  const near: [weight: number, m: PairMotion][] = [];
   for (const m of pairs) {
     const weight = weightOf(m);
     if (weight === 0) continue;
     all += weight;
     together += weight * m.together;
     asOne += weight * m.asOne;
-    near.push([weight, m]);
   }
   if (!(asOne > 0)) return { share: 0, pairs: 0, error: 0 };
   const share = Math.min(1, Math.max(0, together / asOne));
   const byLines = new SumsByTwoLines(line);
-  for (const [weight, m] of near) byLines.add(m, weight * (m.together - share * m.asOne));
+  for (const m of pairs) {
+    const weight = weightOf(m);
+    if (weight !== 0) byLines.add(m, weight * (m.together - share * m.asOne));
+  }
   return { share, pairs: share * all, error: (all * byLines.error()) / asOne };
 }

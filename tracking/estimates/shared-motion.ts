@@ -1,3 +1,4 @@
+import { numbersColumn, type GrowingColumn } from '../growing-column';
 import { keyOfLines } from './by-two-lines';
 import type { LineGroups } from './line-groups';
 
@@ -23,18 +24,28 @@ export function sumError(
  * Pairs of lines, each once, that may be one: tracks of both come near each other and are too short or too
  * still to be told apart, and no other tracks of the two are.
  */
-export function perhapsOneLine({ line, lines, pairs, untold }: LineGroups): [number, number][] {
-  const apart = new Set<number>();
-  for (const m of pairs) if (!m.rigid) apart.add(keyOfLines(line[m.trackA], line[m.trackB], lines));
-  const perhaps = new Map<number, [number, number]>();
+export function perhapsOneLine({ line, lines, pairs, untold }: LineGroups): Iterable<[number, number]> {
+  const apart = numbersColumn();
+  for (const m of pairs) if (!m.rigid) apart.push(keyOfLines(line[m.trackA], line[m.trackB], lines));
+  const perhaps = numbersColumn();
   for (const m of untold) {
     const [a, b] = [line[m.trackA], line[m.trackB]];
-    if (a === b) continue;
-    const key = keyOfLines(a, b, lines);
-    if (!apart.has(key)) perhaps.set(key, [a, b]);
+    if (a !== b) perhaps.push(keyOfLines(a, b, lines));
   }
-  return [...perhaps.values()];
+  const [keys, others] = [sorted(perhaps), sorted(apart)];
+  return {
+    *[Symbol.iterator]() {
+      let at = 0;
+      for (let i = 0; i < keys.length; i++) {
+        if (keys[i] === keys[i - 1]) continue;
+        while (others[at] < keys[i]) at++;
+        if (others[at] !== keys[i]) yield [Math.floor(keys[i] / lines), keys[i] % lines];
+      }
+    },
+  };
 }
+
+const sorted = ({ values, length }: GrowingColumn<Float64Array>) => values.subarray(0, length).sort();
 
 /** Sums what tracks add over the tracks of each line. */
 export function byLine(part: Float64Array, groups: Pick<LineGroups, 'line' | 'lines'>): Float64Array {

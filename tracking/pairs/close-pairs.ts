@@ -1,3 +1,4 @@
+import { countsColumn, numbersColumn } from '../growing-column';
 import { POINT_BRIDGED, type Tracks } from '../types';
 
 /** A stretch of frames in which two tracks come within reach of each other. */
@@ -8,6 +9,52 @@ export interface Meeting {
   /** Frame of the least measured separation, and that separation, px. */
   frame: number;
   separationPx: number;
+}
+
+/** Meetings in columns: there may be millions. Walking over them makes one short-lived object after the other. */
+export class Meetings implements Iterable<Meeting> {
+  readonly trackA = countsColumn();
+  readonly trackB = countsColumn();
+  private readonly frame = countsColumn();
+  private readonly separationPx = numbersColumn();
+  private readonly last = countsColumn();
+
+  get length(): number {
+    return this.trackA.length;
+  }
+
+  /** @returns its number. */
+  begin(trackA: number, trackB: number, frame: number, separationPx: number): number {
+    this.trackA.push(trackA);
+    this.trackB.push(trackB);
+    this.frame.push(frame);
+    this.separationPx.push(separationPx);
+    this.last.push(frame);
+    return this.length - 1;
+  }
+
+  /** Takes up that the two are within reach in one more frame. */
+  goOn(i: number, frame: number, separationPx: number): void {
+    this.last.values[i] = frame;
+    if (separationPx >= this.separationPx.values[i]) return;
+    this.separationPx.values[i] = separationPx;
+    this.frame.values[i] = frame;
+  }
+
+  lastFrame(i: number): number {
+    return this.last.values[i];
+  }
+
+  *[Symbol.iterator](): Generator<Meeting> {
+    for (let i = 0; i < this.length; i++) {
+      yield {
+        trackA: this.trackA.values[i],
+        trackB: this.trackB.values[i],
+        frame: this.frame.values[i],
+        separationPx: this.separationPx.values[i],
+      };
+    }
+  }
 }
 
 /** Out of reach for longer than this, two tracks that come near again meet anew. */
@@ -27,7 +74,7 @@ export function closePairs(
   image: { width: number; height: number; frames: number },
   reachPx: number,
   everyFrames = 1,
-): Meeting[] {
+): Meetings {
   if (!(reachPx > 0)) throw new RangeError(`reachPx must be > 0. Received ${reachPx}.`);
   const { order, from, track } = pointsByFrame(tracks, chosen, image.frames);
   // One ring of cells around the image takes positions that lie just outside.
@@ -41,8 +88,11 @@ export function closePairs(
     const row = Math.max(0, Math.min(rows - 1, 1 + Math.floor(tracks.yPx[p] / cellPx)));
     return row * columns + column;
   };
-  const meetings: (Meeting & { last: number })[] = [];
-  const current = new Map<number, number>();
+  const meetings = new Meetings();
+  // Meetings that may go on, by pair: those of the frames before are forgotten when none of them may.
+  let current = new Map<number, number>();
+  let before = new Map<number, number>();
+  let forgetAt = NEW_MEETING_FRAMES;
 
   const meet = (p: number, q: number, frame: number) => {
     const separationPx = Math.hypot(tracks.xPx[p] - tracks.xPx[q], tracks.yPx[p] - tracks.yPx[q]);
@@ -50,21 +100,20 @@ export function closePairs(
     const trackA = Math.min(track[p], track[q]);
     const trackB = Math.max(track[p], track[q]);
     const key = trackA * tracks.count + trackB;
-    const known = current.get(key);
-    const meeting = known === undefined ? undefined : meetings[known];
-    if (!meeting || frame - meeting.last > NEW_MEETING_FRAMES) {
-      current.set(key, meetings.length);
-      meetings.push({ trackA, trackB, frame, separationPx, last: frame });
-      return;
+    let meeting = current.get(key) ?? before.get(key);
+    if (meeting === undefined || frame - meetings.lastFrame(meeting) > NEW_MEETING_FRAMES) {
+      meeting = meetings.begin(trackA, trackB, frame, separationPx);
+    } else {
+      meetings.goOn(meeting, frame, separationPx);
     }
-    meeting.last = frame;
-    if (separationPx < meeting.separationPx) {
-      meeting.separationPx = separationPx;
-      meeting.frame = frame;
-    }
+    current.set(key, meeting);
   };
 
   for (let frame = 0; frame < image.frames; frame += everyFrames) {
+    if (frame > forgetAt) {
+      [before, current] = [current, new Map()];
+      forgetAt = frame + NEW_MEETING_FRAMES;
+    }
     for (let i = from[frame]; i < from[frame + 1]; i++) {
       const p = order[i];
       const cell = cellOf(p);
@@ -80,7 +129,28 @@ export function closePairs(
     }
     for (let i = from[frame]; i < from[frame + 1]; i++) head[cellOf(order[i])] = -1;
   }
-  return meetings.map(({ trackA, trackB, frame, separationPx }) => ({ trackA, trackB, frame, separationPx }));
+  return meetings;
+}
+
+/** The pairs of tracks that meet, each once however often they do, by their first track. */
+export function* pairsOnce(
+  { trackA, trackB, length }: Meetings,
+  tracks: number,
+): Generator<readonly [trackA: number, trackB: number]> {
+  const from = new Uint32Array(tracks + 1);
+  for (let i = 0; i < length; i++) from[trackA.values[i] + 1]++;
+  for (let a = 0; a < tracks; a++) from[a + 1] += from[a];
+  const partner = new Uint32Array(length);
+  const place = from.slice();
+  for (let i = 0; i < length; i++) partner[place[trackA.values[i]]++] = trackB.values[i];
+  const metBy = new Int32Array(tracks).fill(-1);
+  for (let a = 0; a < tracks; a++) {
+    for (let k = from[a]; k < from[a + 1]; k++) {
+      if (metBy[partner[k]] === a) continue;
+      metBy[partner[k]] = a;
+      yield [a, partner[k]];
+    }
+  }
 }
 
 /** Measured points of chosen tracks, frame by frame: those of frame f are `order[from[f] .. from[f + 1] - 1]`. */

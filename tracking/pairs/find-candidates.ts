@@ -37,7 +37,7 @@ export function findCandidates(
   const chosen = Uint8Array.from(population, (code, i) =>
     code !== FREE && tracks.start[i + 1] - tracks.start[i] >= SIDE_POINTS_MIN ? 1 : 0,
   );
-  const tested = closePairs(tracks, chosen, image, reachPx).flatMap((meeting) => {
+  const tested = [...closePairs(tracks, chosen, image, reachPx)].flatMap((meeting) => {
     const separation = separationAround(tracks, meeting.trackA, meeting.trackB, meeting.frame, pixelM);
     if (!meetsAndParts(separation)) return [];
     const fit = fitMeeting(separation, dtS, REDUCED_CHI2_MAX);

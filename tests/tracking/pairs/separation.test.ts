@@ -1,5 +1,5 @@
 import { expect, test } from 'vitest';
-import { closePairs } from '@/tracking/pairs/close-pairs';
+import { closePairs, pairsOnce } from '@/tracking/pairs/close-pairs';
 import { fitMeeting } from '@/tracking/pairs/meeting-fit';
 import { separationAround } from '@/tracking/pairs/separation';
 import { createRandom } from '@/tracking/random';
@@ -75,7 +75,7 @@ test('meetings are those that comparing every pair in every frame finds', () => 
     }
     const image = { width: 100, height: 60, frames: 25 };
     const found = closePairs(tracks, new Uint8Array(30).fill(1), image, reach);
-    const got = new Map(found.map((m) => [`${m.trackA} ${m.trackB}`, m.separationPx]));
+    const got = new Map([...found].map((m) => [`${m.trackA} ${m.trackB}`, m.separationPx]));
     expect([...got].sort()).toEqual([...expected].sort());
   }
 });
@@ -129,4 +129,30 @@ test('a straight fly-by is not taken for a reconnection', () => {
   }
   // 0 of 100 in a simulation of this test before; 3 % is its 95 % bound.
   expect(taken).toBeLessThanOrEqual(3);
+});
+
+test('two tracks that part for long enough meet anew, whenever that is', () => {
+  const random = createRandom(11);
+  for (let round = 0; round < 60; round++) {
+    const frames = 200;
+    // Stays in reach or out of it for 1 to 40 frames.
+    const near: boolean[] = [];
+    while (near.length < frames) {
+      const stay = 1 + Math.floor(40 * random.uniform());
+      for (let k = 0; k < stay; k++) near.push(near.length > 0 && k === 0 ? !near.at(-1)! : !!near.at(-1));
+    }
+    const first = { first: 0, x: new Array<number>(frames).fill(20), y: new Array<number>(frames).fill(20) };
+    const second = { ...first, x: near.slice(0, frames).map((is) => (is ? 22 : 60)) };
+    const tracks = tracksOf([first, second], 0.1);
+    let [expected, last] = [0, -Infinity];
+    near.slice(0, frames).forEach((is, frame) => {
+      if (!is) return;
+      // More than 20 frames after the last one in reach.
+      if (frame - last > 20) expected++;
+      last = frame;
+    });
+    const meetings = closePairs(tracks, Uint8Array.of(1, 1), { width: 80, height: 40, frames }, 5);
+    expect(meetings.length).toBe(expected);
+    expect([...pairsOnce(meetings, 2)]).toEqual(expected > 0 ? [[0, 1]] : []);
+  }
 });

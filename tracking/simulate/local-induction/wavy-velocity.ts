@@ -36,5 +36,5 @@ export function wavyVelocityFactor(
     for (let k = 0; k < v.length; k += 3)
       components.push(v[k] * sin * Math.cos(turn) + v[k + 1] * sin * Math.sin(turn) + v[k + 2] * cos);
   }
-  return (Math.sqrt(3 * trimmed(components).variance) * spacingM) / betaM2S;
+  return (Math.sqrt(3 * trimmed(Float64Array.from(components)).variance) * spacingM) / betaM2S;
 }
