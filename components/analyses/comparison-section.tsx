@@ -1,7 +1,7 @@
 import { FormulaText } from '@/components/ui/formula-text';
 import { Quantity } from '@/components/ui/quantity';
 import { Section } from '@/components/ui/sheet';
-import { Cell, HeadCell, NarrowMore, Row, Table } from '@/components/ui/table';
+import { Cell, HeadCell, NarrowShown, Row, Table } from '@/components/ui/table';
 import { DISPLAY_UNITS } from '@/lib/format/unit';
 import type { DetailsView } from '@/lib/views/details-view';
 import { SourceFold } from './source-fold';
@@ -37,6 +37,22 @@ const Symbol = ({ letter, sub }: { letter: string; sub: string }) => (
   </>
 );
 
+function Measured(one: Comparison) {
+  return one.measured ? <Quantity {...one.measured} {...unitOf(one)} /> : 'none';
+}
+
+function Expected(one: Comparison) {
+  if (one.expected.length === 0) return 'none';
+  return one.expected.map(({ name, value, low, high }) => (
+    <span key={name} className="block">
+      <span className="text-ink-2">
+        <ExpectedName name={name} />{' '}
+      </span>
+      <Quantity {...{ value, low, high }} {...unitOf(one)} />
+    </span>
+  ));
+}
+
 /** What was measured beside what temperature and heat flux let expect. */
 export function ComparisonSection({ comparisons }: { comparisons: DetailsView['comparisons'] }) {
   return (
@@ -45,54 +61,44 @@ export function ComparisonSection({ comparisons }: { comparisons: DetailsView['c
         <thead>
           <tr>
             <HeadCell>Quantity</HeadCell>
-            <HeadCell numeric>Measured</HeadCell>
-            <HeadCell numeric>Expected</HeadCell>
+            <HeadCell numeric narrow="hide">
+              Measured
+            </HeadCell>
+            <HeadCell numeric narrow="hide">
+              Expected
+            </HeadCell>
             <HeadCell numeric narrow="hide">
               Ratio
             </HeadCell>
           </tr>
         </thead>
         <tbody>
-          {comparisons.map((one) => {
-            const { siPerUnit, unit } = unitOf(one);
-            return (
-              <Row key={one.what}>
-                <Cell head>
-                  {NAMES[one.what]}
-                  <span className="block max-w-[52ch] text-small text-ink-2">
-                    <FormulaText>{one.note}</FormulaText>
-                  </span>
-                  {one.ratio ? (
-                    <NarrowMore items={[{ label: 'Ratio', value: <Quantity {...one.ratio} /> }]} />
-                  ) : null}
-                </Cell>
-                <Cell numeric className="align-top">
-                  {one.measured ? <Quantity {...one.measured} siPerUnit={siPerUnit} unit={unit} /> : 'none'}
-                </Cell>
-                <Cell numeric className="align-top">
-                  {one.expected.length === 0
-                    ? 'none'
-                    : one.expected.map((expected) => (
-                        <span key={expected.name} className="block">
-                          <span className="text-ink-2">
-                            <ExpectedName name={expected.name} />{' '}
-                          </span>
-                          <Quantity
-                            value={expected.value}
-                            low={expected.low}
-                            high={expected.high}
-                            siPerUnit={siPerUnit}
-                            unit={unit}
-                          />
-                        </span>
-                      ))}
-                </Cell>
-                <Cell numeric narrow="hide" className="align-top">
-                  {one.ratio ? <Quantity {...one.ratio} /> : null}
-                </Cell>
-              </Row>
-            );
-          })}
+          {comparisons.map((one) => (
+            <Row key={one.what}>
+              <Cell head>
+                {NAMES[one.what]}
+                <span className="block max-w-[52ch] text-small text-ink-2">
+                  <FormulaText>{one.note}</FormulaText>
+                </span>
+                <NarrowShown
+                  items={[
+                    { label: 'Measured', value: <Measured {...one} /> },
+                    { label: 'Expected', value: <Expected {...one} /> },
+                    ...(one.ratio ? [{ label: 'Ratio', value: <Quantity {...one.ratio} /> }] : []),
+                  ]}
+                />
+              </Cell>
+              <Cell numeric narrow="hide" className="align-top">
+                <Measured {...one} />
+              </Cell>
+              <Cell numeric narrow="hide" className="align-top">
+                <Expected {...one} />
+              </Cell>
+              <Cell numeric narrow="hide" className="align-top">
+                {one.ratio ? <Quantity {...one.ratio} /> : null}
+              </Cell>
+            </Row>
+          ))}
         </tbody>
       </Table>
       <SourceFold

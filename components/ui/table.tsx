@@ -112,19 +112,34 @@ export function CellNote({ children, tone = 'quiet' }: { children: ReactNode; to
   return <div className={`text-small ${tone === 'error' ? 'text-red-text' : 'text-ink-3'}`}>{children}</div>;
 }
 
+interface NarrowItems {
+  items: readonly { label: ReactNode; value: ReactNode }[];
+}
+
 /** What the hidden columns of a row say, folded under its name on narrow screens only. */
-export function NarrowMore({ items }: { items: readonly { label: ReactNode; value: ReactNode }[] }) {
+export function NarrowMore({ items }: NarrowItems) {
   return (
     <details className="text-small text-ink-2 hand:hidden">
       <summary className="min-h-6 py-1 text-ink-3">more</summary>
-      <dl className="grid grid-cols-[auto_minmax(0,1fr)] gap-x-3 gap-y-[2px] pb-1">
-        {items.map((item, index) => (
-          <div key={index} className="contents">
-            <dt>{item.label}</dt>
-            <dd className="text-ink">{item.value}</dd>
-          </div>
-        ))}
-      </dl>
+      <NarrowList items={items} />
     </details>
   );
 }
+
+/** The same in plain sight, where the hidden columns are what the table is for. */
+export const NarrowShown = ({ items }: NarrowItems) => (
+  <div className="pt-1 text-small text-ink-2 hand:hidden">
+    <NarrowList items={items} />
+  </div>
+);
+
+const NarrowList = ({ items }: NarrowItems) => (
+  <dl className="grid grid-cols-[auto_minmax(0,1fr)] gap-x-3 gap-y-[2px] pb-1">
+    {items.map((item, index) => (
+      <div key={index} className="contents">
+        <dt>{item.label}</dt>
+        <dd className="text-ink">{item.value}</dd>
+      </div>
+    ))}
+  </dl>
+);

@@ -5,6 +5,7 @@ import type { RunView } from '@/lib/views/run-view';
 import { models } from '@/models';
 import { closeDatabase } from '@/models/database';
 import { ApiScript } from '../helpers/api-client';
+import { makeRecording } from '../helpers/lab-rows';
 import { sharedServer } from '../helpers/server';
 import { makeTestLab, type TestLab } from '../helpers/test-lab';
 import { launchBrowser, openWindow, signIn, type Visit } from './support/browser';
@@ -124,6 +125,27 @@ describe('a form says what is wrong in one sentence and stores nothing', () => {
     await choice.getByRole('button', { name: 'Take theirs' }).click();
     await page.getByText('Theirs again.').waitFor();
     expect(await field('Temperature').inputValue()).toBe('1.7');
+  });
+
+  it('B44 a recipe that the recording can not have: the server says what and how much, at the field', async () => {
+    const { page } = visit;
+    const { labId } = lab;
+    const { userId } = lab.people.experimentalist;
+    const [{ id: runId }] = await runs();
+    const recording = await makeRecording({ labId, userId, campaignId }, { runId });
+    await page.goto(`/recordings/${recording.id}`);
+    await page.getByText('Recipe', { exact: true }).click();
+    const start = page.getByRole('button', { name: 'Start analysis' });
+    for (const [label, typed, most] of [
+      ['Longest step', '900', 'at most 64'],
+      ['Lags', '1, 50', 'at most 39'],
+    ] as const) {
+      await field(label).fill(typed);
+      await start.click();
+      await page.getByText(most).waitFor();
+      expect(await models().Analysis.count({ where: { recordingId: recording.id } })).toBe(0);
+      await field(label).fill('');
+    }
   });
 
   it('B42 an address with a column that no list has shows the list', async () => {
