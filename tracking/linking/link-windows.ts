@@ -9,8 +9,12 @@ import type { BrightnessStatistics } from './brightness-statistics';
 import { trackLinks, type TrackLinks } from './track-links';
 import { untangle } from './untangle';
 
-/** Frames that are linked at once. Counted from frame 0, so they don't depend on how the spots came. */
-const WINDOW_FRAMES = 1000;
+/**
+ * Spots that are linked at once, about, and bounds of the frames that hold them. Frames are counted from
+ * frame 0, so windows don't depend on how the spots came.
+ */
+const WINDOW_SPOTS = 200_000;
+const WINDOW_FRAMES = { least: 300, most: 1000 } as const;
 /**
  * Frames to either side that are linked along with a window and then forgotten: a filter has settled
  * and a close approach is over by then.
@@ -30,7 +34,7 @@ export interface LinkKnowledge {
 
 /**
  * Links of a whole recording, some frames at a time, so that only the links themselves grow with
- * its length. A recording not longer than one window is linked as one.
+ * its length or its density. A recording not longer than one window is linked as one.
  *
  * @param limits with the whole recording's frames.
  */
@@ -38,7 +42,7 @@ export function linkInWindows(
   source: SpotSource,
   limits: LinkLimits,
   known: LinkKnowledge,
-  windowFrames = WINDOW_FRAMES,
+  windowFrames = framesAtOnce(source),
   marginFrames = MARGIN_FRAMES,
 ): Pick<TrackLinks, 'before' | 'after'> {
   const { count } = source;
@@ -66,6 +70,14 @@ export function linkInWindows(
     first = next;
   }
   return { before, after };
+}
+
+/** Frames of a window, by how many spots a frame has on average over the recording. */
+function framesAtOnce(source: SpotSource): number {
+  if (source.count === 0) return WINDOW_FRAMES.most;
+  const frames = frameOfSpot(source, source.count - 1) - frameOfSpot(source, 0) + 1;
+  const wanted = Math.round((WINDOW_SPOTS / source.count) * frames);
+  return Math.max(WINDOW_FRAMES.least, Math.min(WINDOW_FRAMES.most, wanted));
 }
 
 function linkWindow(spots: Spots, limits: LinkLimits, known: LinkKnowledge): TrackLinks {

@@ -1,5 +1,6 @@
 import { countsColumn, numbersColumn } from '../growing-column';
-import { POINT_BRIDGED, type Tracks } from '../types';
+import type { Tracks } from '../types';
+import { sweepFrames } from './sweep-frames';
 
 /** A stretch of frames in which two tracks come within reach of each other. */
 export interface Meeting {
@@ -76,13 +77,11 @@ export function closePairs(
   everyFrames = 1,
 ): Meetings {
   if (!(reachPx > 0)) throw new RangeError(`reachPx must be > 0. Received ${reachPx}.`);
-  const { order, from, track } = pointsByFrame(tracks, chosen, image.frames);
   // One ring of cells around the image takes positions that lie just outside.
   const cellPx = Math.max(reachPx, 1);
   const columns = Math.ceil(image.width / cellPx) + 2;
   const rows = Math.ceil(image.height / cellPx) + 2;
   const head = new Int32Array(columns * rows).fill(-1);
-  const next = new Int32Array(tracks.frame.length);
   const cellOf = (p: number) => {
     const column = Math.max(0, Math.min(columns - 1, 1 + Math.floor(tracks.xPx[p] / cellPx)));
     const row = Math.max(0, Math.min(rows - 1, 1 + Math.floor(tracks.yPx[p] / cellPx)));
@@ -94,11 +93,11 @@ export function closePairs(
   let before = new Map<number, number>();
   let forgetAt = NEW_MEETING_FRAMES;
 
-  const meet = (p: number, q: number, frame: number) => {
+  const meet = (p: number, q: number, trackP: number, trackQ: number, frame: number) => {
     const separationPx = Math.hypot(tracks.xPx[p] - tracks.xPx[q], tracks.yPx[p] - tracks.yPx[q]);
     if (!(separationPx <= reachPx)) return;
-    const trackA = Math.min(track[p], track[q]);
-    const trackB = Math.max(track[p], track[q]);
+    const trackA = Math.min(trackP, trackQ);
+    const trackB = Math.max(trackP, trackQ);
     const key = trackA * tracks.count + trackB;
     let meeting = current.get(key) ?? before.get(key);
     if (meeting === undefined || frame - meetings.lastFrame(meeting) > NEW_MEETING_FRAMES) {
@@ -109,25 +108,26 @@ export function closePairs(
     current.set(key, meeting);
   };
 
-  for (let frame = 0; frame < image.frames; frame += everyFrames) {
+  let next = new Int32Array(0);
+  for (const { frame, count, point, track } of sweepFrames(tracks, chosen, image.frames, everyFrames)) {
     if (frame > forgetAt) {
       [before, current] = [current, new Map()];
       forgetAt = frame + NEW_MEETING_FRAMES;
     }
-    for (let i = from[frame]; i < from[frame + 1]; i++) {
-      const p = order[i];
-      const cell = cellOf(p);
+    if (next.length < count) next = new Int32Array(point.length);
+    for (let i = 0; i < count; i++) {
+      const cell = cellOf(point[i]);
       for (let dy = -1; dy <= 1; dy++) {
         for (let dx = -1; dx <= 1; dx++) {
           const other = cell + dy * columns + dx;
           if (other < 0 || other >= head.length) continue;
-          for (let q = head[other]; q >= 0; q = next[q]) meet(p, q, frame);
+          for (let j = head[other]; j >= 0; j = next[j]) meet(point[i], point[j], track[i], track[j], frame);
         }
       }
-      next[p] = head[cell];
-      head[cell] = p;
+      next[i] = head[cell];
+      head[cell] = i;
     }
-    for (let i = from[frame]; i < from[frame + 1]; i++) head[cellOf(order[i])] = -1;
+    for (let i = 0; i < count; i++) head[cellOf(point[i])] = -1;
   }
   return meetings;
 }
@@ -151,26 +151,4 @@ export function* pairsOnce(
       yield [a, partner[k]];
     }
   }
-}
-
-/** Measured points of chosen tracks, frame by frame: those of frame f are `order[from[f] .. from[f + 1] - 1]`. */
-export function pointsByFrame(tracks: Tracks, chosen: Uint8Array, frames: number) {
-  const from = new Uint32Array(frames + 1);
-  const track = new Uint32Array(tracks.frame.length);
-  const takes = (i: number, p: number) => chosen[i] === 1 && (tracks.flags[p] & POINT_BRIDGED) === 0;
-  for (let i = 0; i < tracks.count; i++) {
-    for (let p = tracks.start[i]; p < tracks.start[i + 1]; p++) {
-      track[p] = i;
-      if (takes(i, p)) from[tracks.frame[p] + 1]++;
-    }
-  }
-  for (let f = 0; f < frames; f++) from[f + 1] += from[f];
-  const order = new Uint32Array(from[frames]);
-  const place = from.slice();
-  for (let i = 0; i < tracks.count; i++) {
-    for (let p = tracks.start[i]; p < tracks.start[i + 1]; p++) {
-      if (takes(i, p)) order[place[tracks.frame[p]]++] = p;
-    }
-  }
-  return { order, from, track };
 }

@@ -1,6 +1,6 @@
 import type { Random } from '../random';
 import type { Tracks } from '../types';
-import { pointsByFrame } from './close-pairs';
+import { pointsByFrame } from './points-by-frame';
 import { fitMeeting } from './meeting-fit';
 import { meetingScore, REDUCED_CHI2_MAX } from './judge-meeting';
 import { meetsAndParts, seenSide, separationAround, type SeenSide } from './separation';
