@@ -37,6 +37,8 @@ export interface ChosenGroups {
   bic: (number | null)[];
   ashmanD: number | null;
   groups: GroupMeans[];
+  /** All tracks as one group; null where they could not be described so. */
+  single: GroupMeans | null;
   /** Rows of as many probabilities as groups, the groups' own uncertainty allowed for. */
   probability: Float64Array;
   /** The two components in the order of `groups`; null where there is one group or none. */
@@ -83,6 +85,8 @@ export function chooseGroups(table: FeatureTable, scaled: Standardised, seed: nu
   }
   const one = bic[0];
   const two = bic[1];
+  const all = new Float64Array(table.n).fill(1);
+  const single = fits[0] ? groupMeans(table, scaled, fits[0], all)[0] : null;
   let ashmanD: number | null = null;
   if (one !== null && two !== null && fits[1] && full[1]) {
     const groups = groupMeans(table, scaled, fits[1], full[1].responsibilities);
@@ -96,12 +100,19 @@ export function chooseGroups(table: FeatureTable, scaled: Standardised, seed: nu
     if (one - two > BIC_GAIN_MIN && ashmanD > ASHMAN_D_MIN && counts) {
       const [first, second] = fits[1].components;
       const probability = averagedProbabilities(data, fits[1].components, seed);
-      return { bic, ashmanD, groups, probability, two: [first, second] };
+      return { bic, ashmanD, groups, single, probability, two: [first, second] };
     }
   }
-  const single = fits[0];
-  const groups = single ? groupMeans(table, scaled, single, new Float64Array(table.n).fill(1)) : [];
-  return { bic, ashmanD, groups, probability: new Float64Array(table.n).fill(1), two: null };
+  return asOneGroup({ bic, ashmanD, single }, table.n);
+}
+
+/** The same with all tracks in one group, whatever else was found. */
+export function asOneGroup(
+  { bic, ashmanD, single }: Pick<ChosenGroups, 'bic' | 'ashmanD' | 'single'>,
+  tracks: number,
+): ChosenGroups {
+  const probability = new Float64Array(tracks).fill(1);
+  return { bic, ashmanD, groups: single ? [single] : [], single, probability, two: null };
 }
 
 function groupMeans(table: FeatureTable, scaled: Standardised, fit: Mixture, q: Float64Array): GroupMeans[] {

@@ -79,6 +79,26 @@ export interface SingleGroup {
 }
 
 /**
+ * Two groups where no flow is expected: the normal fluid rests and its tracers with it, so a group that itself
+ * moves isn't free, however much more the other one moves. Tracers of one line move as one and so look like a
+ * group of their own.
+ *
+ * @param free what the group named free is like.
+ * @returns one name for all, none for either, or null where the names stand.
+ */
+export function namesWithoutFlow(free: SingleGroup, expected: ExpectedFlow | null): Naming | null {
+  if (!expected || expected.flow.vnMS > 0 || !free.aboveNoise) return null;
+  if (nameSingleGroup(free, expected).names[0] === 'trapped') {
+    const note =
+      'No flow is expected, and of two groups of tracks the slower one moves in the way of lines as well: all are named trapped.';
+    return { names: ['trapped'], note };
+  }
+  const note =
+    'Two groups of tracks, but no flow is expected and even the slower one moves: they stay unnamed until a person decides.';
+  return { names: ['unnamed', 'unnamed'], note };
+}
+
+/**
  * Names a single group where physics decides: free if it moves with the expected normal fluid and
  * has no heavy tails across it; trapped if it moves otherwise; without any flow trapped if it
  * moves more than noise and in jumps. Else it stays undecided.

@@ -4,9 +4,15 @@ import { POPULATIONS, type Conditions, type Recipe, type Tracks } from '../types
 import { unitFlow } from '../velocities';
 import { changesOfState, type StateChange } from './changes-of-state';
 import { FREE, TRAPPED, UNDECIDED } from './codes';
-import { chooseGroups, type ChosenGroups } from './choose-groups';
+import { asOneGroup, chooseGroups, type ChosenGroups, type GroupMeans } from './choose-groups';
 import { featureTable, standardise, type FeatureTable } from './feature-table';
-import { nameSingleGroup, nameTwoGroups, type Naming } from './name-groups';
+import {
+  namesWithoutFlow,
+  nameSingleGroup,
+  nameTwoGroups,
+  type Naming,
+  type SingleGroup,
+} from './name-groups';
 import { FEATURES } from './track-features';
 import { transverseKurtosis } from './transverse-kurtosis';
 import { wilsonInterval } from './wilson';
@@ -50,6 +56,7 @@ export function findPopulations(
       bic: [null, null, null],
       ashmanD: null,
       groups: [],
+      single: null,
       probability: new Float64Array(),
       two: null,
     };
@@ -57,15 +64,14 @@ export function findPopulations(
     return { population, pTrapped, summary, changes: [], table };
   }
   const scaled = standardise(table);
-  const chosen = chooseGroups(table, scaled, recipe.seed);
+  const found = chooseGroups(table, scaled, recipe.seed);
   const expectation = expectedFlow(conditions);
   const known = 'refused' in expectation ? null : expectation;
   // Without a direction the velocity along the flow means nothing.
   const expected = known && (direction || known.flow.vnMS === 0) ? known : null;
-  const naming =
-    chosen.groups.length === 2
-      ? nameTwoGroups(chosen.groups, expected)
-      : nameOne(tracks, table, chosen, conditions, flow, expected);
+  const like = (group: GroupMeans, rows: readonly number[]) =>
+    likeness(tracks, table, group, rows, conditions, flow, expected);
+  const { chosen, naming } = nameAll(found, table, expected, like);
   const trapped = naming.names.indexOf('trapped');
   for (let i = 0; i < table.n; i++) {
     const track = table.track[i];
@@ -91,34 +97,57 @@ export function findPopulations(
   return { population, pTrapped, summary: summarise(population, table, chosen, naming), changes, table };
 }
 
-function nameOne(
+/** Names for the groups, and these as one group where only that can be named. */
+function nameAll(
+  found: ChosenGroups,
+  table: FeatureTable,
+  expected: ExpectedFlow | null,
+  like: (group: GroupMeans, rows: readonly number[]) => SingleGroup,
+): { chosen: ChosenGroups; naming: Naming } {
+  const rows = Array.from({ length: table.n }, (_, i) => i);
+  const [group] = found.groups;
+  if (!group)
+    return { chosen: found, naming: { names: [], note: 'The tracks could not be described by a mixture.' } };
+  if (found.groups.length === 1)
+    return { chosen: found, naming: nameSingleGroup(like(group, rows), expected) };
+  const naming = nameTwoGroups(found.groups, expected);
+  const free = naming.names.indexOf('free');
+  if (free < 0) return { chosen: found, naming };
+  const own = rows.filter((i) => found.probability[2 * i + free] > 0.5);
+  const instead = namesWithoutFlow(like(found.groups[free], own), expected) ?? naming;
+  return { chosen: instead.names.length === 1 ? asOneGroup(found, table.n) : found, naming: instead };
+}
+
+/** What tells whether some rows of the table move in the way of lines. */
+function likeness(
   tracks: Tracks,
   table: FeatureTable,
-  chosen: ChosenGroups,
+  group: GroupMeans,
+  rows: readonly number[],
   conditions: Conditions,
   flow: readonly [number, number],
   expected: ExpectedFlow | null,
-): Naming {
-  if (chosen.groups.length === 0)
-    return { names: [], note: 'The tracks could not be described by a mixture.' };
+): SingleGroup {
+  const n = rows.length;
   let mean = 0;
   let square = 0;
   let clear = 0;
-  for (let i = 0; i < table.n; i++) {
+  for (const i of rows) {
     const slope = table.value[i * FEATURES + 3];
-    mean += slope / table.n;
-    square += (slope * slope) / table.n;
+    mean += slope / n;
+    square += (slope * slope) / n;
     // The error of ln r.m.s. from noise alone is small where motion stands clear of noise.
     if (table.variance[i * FEATURES + 1] < 0.25) clear++;
   }
-  const single = {
-    group: chosen.groups[0],
-    tracks: table.n,
-    transverse: transverseKurtosis(tracks, table.track, conditions, flow, KURTOSIS_LAG),
-    msdSlope: { value: mean, error: Math.sqrt(Math.max(0, square - mean * mean) / table.n) },
-    aboveNoise: clear > table.n / 2,
+  const own = rows.map((i) => table.track[i]);
+  const noFlow = expected !== null && !(expected.flow.vnMS > 0);
+  return {
+    group,
+    tracks: n,
+    transverse: transverseKurtosis(tracks, own, conditions, flow, KURTOSIS_LAG, noFlow),
+    msdSlope: { value: mean, error: Math.sqrt(Math.max(0, square - mean * mean) / n) },
+    aboveNoise: clear > n / 2,
   };
-  return nameSingleGroup(single, expected);
 }
 
 function summarise(

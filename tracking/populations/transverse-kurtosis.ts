@@ -15,6 +15,8 @@ export interface Kurtosis {
 /**
  * Excess kurtosis (0 for a Gaussian) of the velocity across the flow at a lag, over given tracks;
  * error by a grouped jackknife over whole tracks. NaN below 4 samples.
+ *
+ * @param both means the kurtosis along the flow into it: without a flow either direction tells as much.
  */
 export function transverseKurtosis(
   tracks: Tracks,
@@ -22,25 +24,31 @@ export function transverseKurtosis(
   conditions: Pick<Conditions, 'pixelSize_m' | 'frameInterval_s'>,
   flow: readonly [number, number],
   lagFrames: number,
+  both = false,
 ): Kurtosis {
-  const sums = Array.from({ length: GROUPS }, () => new Float64Array(5));
+  // Powers 0 to 4 of the velocity across, then along.
+  const sums = Array.from({ length: GROUPS }, () => new Float64Array(10));
   let place = 0;
   for (const track of chosen) {
     const v = trackVelocities(trackSlice(tracks, track), lagFrames, conditions);
     const sum = sums[place++ % GROUPS];
     for (let i = 0; i < v.frame.length; i++) {
-      let power = 1;
       // In mm/s, so that fourth powers stay of order one.
-      const across = 1e3 * alongAcross(v.vxMS[i], v.vyMS[i], flow)[1];
-      for (let m = 0; m < 5; m++, power *= across) sum[m] += power;
+      const [along, across] = alongAcross(1e3 * v.vxMS[i], 1e3 * v.vyMS[i], flow);
+      for (let m = 0, power = 1; m < 5; m++, power *= across) sum[m] += power;
+      for (let m = 0, power = 1; m < 5; m++, power *= along) sum[5 + m] += power;
     }
   }
-  const total = new Float64Array(5);
-  for (const sum of sums) for (let m = 0; m < 5; m++) total[m] += sum[m];
-  const value = excessKurtosis(total);
+  const total = new Float64Array(10);
+  for (const sum of sums) for (let m = 0; m < 10; m++) total[m] += sum[m];
+  const kurtosis = (of: Float64Array) => {
+    const across = excessKurtosis(of.subarray(0, 5));
+    return both ? (across + excessKurtosis(of.subarray(5))) / 2 : across;
+  };
+  const value = kurtosis(total);
   const without = sums
     .filter((sum) => sum[0] > 0)
-    .map((sum) => excessKurtosis(total.map((t, m) => t - sum[m])))
+    .map((sum) => kurtosis(total.map((t, m) => t - sum[m])))
     .filter(Number.isFinite);
   const n = without.length;
   const mean = without.reduce((a, b) => a + b, 0) / n;

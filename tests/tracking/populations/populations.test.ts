@@ -1,12 +1,15 @@
 import { describe, expect, test, vi } from 'vitest';
+import type { ExpectedFlow } from '@/tracking/flow/expected-flow';
 import { chooseGroups } from '@/tracking/populations/choose-groups';
 import { standardise } from '@/tracking/populations/feature-table';
 import { FREE, TRAPPED, UNDECIDED } from '@/tracking/populations/codes';
+import { namesWithoutFlow, type SingleGroup } from '@/tracking/populations/name-groups';
 import { findPopulations } from '@/tracking/populations/populations';
 import { createRandom } from '@/tracking/random';
 import { KIND_TRAPPED } from '@/tracking/simulate/scene';
 import { tangleScene } from '@/tracking/simulate/tangle-scene';
 import { trueTracks } from '@/tracking/simulate/true-tracks';
+import { namedTrapped } from '@/tracking/studies/populations';
 import type { Conditions } from '@/tracking/types';
 
 // Mixtures are fitted many times over here.
@@ -122,4 +125,34 @@ test('a handful of tracks is not judged', () => {
   const { found } = judged({ lineDensityM2: 0, freeTracersPerFrame: 2 }, CONDITIONS, 1);
   expect(found.summary.note).toMatch(/long enough/);
   expect(found.summary.groups).toEqual([]);
+});
+
+describe('where no flow is expected', () => {
+  // Simulated decays of trapped tracers alone; those of 12 fall into two groups, since tracers of one line move as one.
+  test.each([12, 14, 15, 17])('lines that move by themselves carry trapped tracers (seed %i)', (seed) => {
+    expect(namedTrapped([seed])).toBe(1);
+  });
+
+  test('a slower group that moves is never named free', () => {
+    const noFlow = { flow: { vnMS: 0, vnRelativeError: 0 } } as ExpectedFlow;
+    const group = { weight: 0.8, alongMS: 0, alongSdMS: 1e-4, lnTransverse: -8, lnTransverseSd: 0.3 };
+    const free: SingleGroup = {
+      group,
+      tracks: 100,
+      transverse: { value: 0.1, error: 0.2, samples: 2000 },
+      msdSlope: { value: 1.5, error: 0.3 },
+      aboveNoise: true,
+    };
+    expect(namesWithoutFlow(free, noFlow)?.names).toEqual(['unnamed', 'unnamed']);
+    // Heavy tails are those of lines; a slope between diffusion and drift is as well.
+    const heavy = { ...free, transverse: { value: 3, error: 0.5, samples: 2000 } };
+    expect(namesWithoutFlow(heavy, noFlow)?.names).toEqual(['trapped']);
+    const between = { ...free, msdSlope: { value: 1.5, error: 0.05 } };
+    expect(namesWithoutFlow(between, noFlow)?.names).toEqual(['trapped']);
+    // At rest up to noise, as the normal fluid is; or in a flow: the names stand.
+    expect(namesWithoutFlow({ ...heavy, aboveNoise: false }, noFlow)).toBeNull();
+    const flowing = { flow: { vnMS: 1e-3, vnRelativeError: 0.1 } } as ExpectedFlow;
+    expect(namesWithoutFlow(heavy, flowing)).toBeNull();
+    expect(namesWithoutFlow(heavy, null)).toBeNull();
+  });
 });
