@@ -8,7 +8,11 @@ export async function csvSink({ folder, table }: SinkPlace): Promise<TableSink> 
   const file = await open(join(folder, name), 'w');
   return {
     async write({ csv }) {
-      if (csv !== '') await file.write(csv);
+      const bytes = typeof csv === 'string' ? Buffer.from(csv) : csv;
+      // A write may take only some of its bytes.
+      for (let done = 0; done < bytes.length;) {
+        done += (await file.write(bytes, done, bytes.length - done)).bytesWritten;
+      }
     },
     async finish() {
       await file.close();

@@ -7,11 +7,12 @@ import { velocityCsvRows, VELOCITIES_COLUMNS } from '@/lib/tables/velocities-csv
 import { POINT_BRIDGED, POPULATIONS } from '@/tracking/types';
 import { trackVelocities } from '@/tracking/velocities';
 import { BatchBuilder } from './batch-builder';
+import { TextBuilder } from './text-builder';
 
-/** The next rows of a table, as columns and, where asked for, as text of its CSV file. */
+/** The next rows of a table, as columns and, where asked for, as text of its CSV file (as bytes, in UTF-8). */
 export interface TablePiece {
   batch: RowBatch;
-  csv: string;
+  csv: string | Uint8Array;
 }
 
 /** Makes rows of one track; the CSV text comes from the very writer of the downloads. */
@@ -33,9 +34,10 @@ async function* pieces(
 ): AsyncGenerator<TablePiece> {
   const builder = new BatchBuilder(columns);
   const ready: RowBatch[] = [];
-  let csv = withCsv ? header + LINE_END : '';
+  const csv = new TextBuilder();
+  if (withCsv) csv.add(header + LINE_END);
   for await (const track of tracks) {
-    if (withCsv) for (const row of csvRows(track)) csv += row + LINE_END;
+    if (withCsv) for (const row of csvRows(track)) csv.add(row + LINE_END);
     fill(track, (put) => {
       put(builder.columns, builder.rows);
       builder.rows++;
@@ -43,11 +45,10 @@ async function* pieces(
       if (builder.full) ready.push(copied(builder.take()));
     });
     for (const batch of ready.splice(0)) {
-      yield { batch, csv };
-      csv = '';
+      yield { batch, csv: csv.take() };
     }
   }
-  yield { batch: builder.take(), csv };
+  yield { batch: builder.take(), csv: csv.take() };
 }
 
 const copied = ({ rows, columns }: RowBatch): RowBatch => ({

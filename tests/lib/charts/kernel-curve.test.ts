@@ -77,7 +77,7 @@ describe('a kernel estimate', () => {
   test('is a table of a package, a row per place', () => {
     const { batch, csv } = velocityKernelPiece(VELOCITY_KERNEL, [stored(KERNEL), stored()]);
     expect(batch.rows).toBe(3);
-    expect(csv.split('\r\n')).toEqual([
+    expect(String(csv).split('\r\n')).toEqual([
       'population,component,lag_s,velocity_m_s,density_s_m,width_m_s,told',
       'free,across,0.005,0,0,0.0002,0',
       'free,across,0.005,0.001,1000,0.0002,1',
