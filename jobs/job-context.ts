@@ -11,6 +11,8 @@ import { withRetries } from '@/models/with-retries';
 export interface JobContext<Payload> {
   claim: JobClaim;
   payload: Payload;
+  /** The worker's own folder, in which only `handed-files.ts` reads and writes. */
+  folder: string;
   /** Aborts when the work was stopped, lost to another worker, or this worker ends. */
   signal: AbortSignal;
   /** Share of the work done, 0..1; stored with the next sign of life. */

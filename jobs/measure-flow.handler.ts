@@ -2,7 +2,6 @@ import type { AnalysisSummary } from '@/lib/analysis-facts';
 import { advance, analysisWork, type AnalysisWork } from '@/models/queries/analysis-progress';
 import { finishAnalysis, readOrder, saveMeasures } from '@/models/queries/analysis-outcome';
 import { dropFlowParts, readFlowParts, saveFlowPart } from '@/models/queries/flow-parts';
-import { readTracks } from '@/models/queries/read-tracks';
 import { readSpotsPerFrame } from '@/models/queries/spot-chunks';
 import { dropStagedMeasures } from '@/models/queries/staged-results';
 import { countLinked, type LinkedCounts } from '@/models/queries/track-counts';
@@ -13,6 +12,7 @@ import type { Conditions, Recipe } from '@/tracking/types';
 import type { Transaction } from 'sequelize';
 import { askForAssessment } from './assess-rehearsal';
 import { decodeFlowParts, decodePopulations, encodeFlowPart } from './flow-part-bytes';
+import { handTracks } from './handed-files';
 import type { JobContext, JobHandler } from './job-context';
 import { LONG_TIMEOUT_MS } from './job-timeouts';
 import { FLOW_STEPS, measureFlowJob, type MeasureFlowPayload } from './measure-flow';
@@ -47,11 +47,11 @@ export const measureFlowHandler: JobHandler<MeasureFlowPayload> = {
 
 /** Populations of the tracks; then all parts may begin. */
 async function nameTracks(
-  { claim, compute, report, commit }: JobContext<MeasureFlowPayload>,
+  { claim, folder, compute, report, commit }: JobContext<MeasureFlowPayload>,
   { work: image, conditions, recipe }: Order,
 ): Promise<void> {
   const { labId, subjectId: analysisId } = claim;
-  const tracks = await readTracks(labId, analysisId, AS_LINKED);
+  const tracks = { path: await handTracks(folder, labId, analysisId) };
   const found = await compute(
     'judgeTracks',
     { tracks, image, conditions, recipe },
@@ -73,14 +73,14 @@ async function nameTracks(
 
 /** One part; who ends the last one puts all together. */
 async function measurePart(
-  { claim, compute, report, commit }: JobContext<MeasureFlowPayload>,
+  { claim, folder, compute, report, commit }: JobContext<MeasureFlowPayload>,
   part: (typeof FLOW_PARTS)[number],
   { work: image, conditions, recipe }: Order,
 ): Promise<void> {
   const { labId, subjectId: analysisId } = claim;
   const [named] = await readFlowParts(labId, analysisId, 'populations');
   if (!named) throw new Error('The tracks have not been named.');
-  const tracks = await readTracks(labId, analysisId, AS_LINKED);
+  const tracks = { path: await handTracks(folder, labId, analysisId) };
   const found = decodePopulations(named.result);
   const result = await compute(
     'measureFlowPart',

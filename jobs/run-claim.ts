@@ -47,7 +47,7 @@ export type ClaimEnd = 'done' | 'put-back' | 'given-up' | 'lost' | 'released';
 export async function runClaim(
   claim: JobClaim,
   handler: JobHandler,
-  { pool, leaving, times, say }: { pool: ComputePool; leaving: AbortSignal; times: ClaimTimes; say: Say },
+  { pool, folder, leaving, times, say }: { pool: ComputePool; folder: string; leaving: AbortSignal; times: ClaimTimes; say: Say }, // prettier-ignore
 ): Promise<ClaimEnd> {
   const { subject, payload } = handler.definition;
   const checked = payload.parse(claim.payload);
@@ -59,6 +59,7 @@ export async function runClaim(
   const context: JobContext<Record<string, unknown>> = {
     claim,
     payload: checked,
+    folder,
     signal: ending.signal,
     report: (done) => void (share = done),
     compute: (task, input, options) => pool.run(task, input, { signal: ending.signal, ...options }),

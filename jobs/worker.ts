@@ -10,6 +10,7 @@ import { reapSilent } from './reap-silent';
 import { runClaim, type ClaimEnd } from './run-claim';
 import type { Say } from './say';
 import { openWakeUp } from './wake-up';
+import { removeAbandonedFolders, removeWorkerFolder, workerFolder } from './worker-folder';
 
 export interface WorkerTimes {
   /** Pause between two looks at the doorbell, for a worker that nobody called meanwhile. */
@@ -61,6 +62,10 @@ export async function startWorker(options: WorkerOptions): Promise<RunningWorker
   const boss = await openDoorbell(databaseUrl());
   const wakeUp = openWakeUp(databaseUrl());
   await addWorker({ id, host: hostname(), pid: process.pid, codeVersion: codeVersion() });
+  // What is left lying costs room only.
+  await removeAbandonedFolders().catch((cause: unknown) =>
+    say('warn', 'folders of ended workers stay', { cause }),
+  );
   say('info', 'worker started', { worker: id });
 
   let current: JobClaim | null = null;
@@ -82,7 +87,13 @@ export async function startWorker(options: WorkerOptions): Promise<RunningWorker
     current = claim;
     try {
       const began = Date.now();
-      const end = await runClaim(claim, handler, { pool, leaving: leaving.signal, times, say });
+      const end = await runClaim(claim, handler, {
+        pool,
+        folder: workerFolder(id),
+        leaving: leaving.signal,
+        times,
+        say,
+      });
       const { kind, subjectId, chunk, attempt } = claim;
       say('info', 'work ended', {
         job: claim.id,
@@ -129,6 +140,7 @@ export async function startWorker(options: WorkerOptions): Promise<RunningWorker
     await life.stop();
     await wakeUp.close();
     await pool.close();
+    await removeWorkerFolder(id).catch(() => undefined);
     await endWorker(id).catch(() => undefined);
     await boss.stop({ graceful: false, wait: true });
     say('info', 'worker ended', { worker: id });

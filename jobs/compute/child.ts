@@ -5,7 +5,7 @@ import { composeStrips } from './steps/compose-strips';
 import { assessRehearsal } from './steps/assess-rehearsal';
 import { detectChunk } from './steps/detect-chunk';
 import { indexStack, inspectStack } from './steps/inspect-stack';
-import { linkFiles, linkTracks } from './steps/link-tracks';
+import { linkTracks } from './steps/link-tracks';
 import { judgeTracks, measureFlow, measureFlowPart } from './steps/measure-flow';
 import { measureImage } from './steps/measure-image';
 import { simulateStack } from './steps/simulate-stack';
@@ -21,7 +21,6 @@ const WORK: Work = {
   measureImage,
   detectChunk,
   linkTracks,
-  linkFiles,
   measureFlow,
   judgeTracks,
   measureFlowPart,

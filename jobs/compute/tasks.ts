@@ -63,21 +63,16 @@ export interface DetectChunkOutput {
   tookMs: number;
 }
 
+/** Files on this machine's disk instead of messages: a long recording has too many spots and tracks for those. */
 export interface LinkTracksInput {
-  /** Spots of all chunks, in order. */
-  chunks: Uint8Array[];
-  image: ImageSize;
-  recipe: Recipe;
-}
-
-/** Files on this machine's disk instead of messages. */
-export interface LinkFilesInput extends Omit<LinkTracksInput, 'chunks'> {
   /** Encoded spots of all chunks, in order. */
   chunkPaths: string[];
   /** Receives the tracks, see `track-file.ts`. */
   tracksPath: string;
+  image: ImageSize;
+  recipe: Recipe;
 }
-export interface LinkFilesOutput {
+export interface LinkTracksOutput {
   tracks: number;
   points: number;
 }
@@ -156,8 +151,7 @@ export interface Tasks {
   inspectStack: { input: InspectInput; output: StackReport };
   measureImage: { input: MeasureImageInput; output: MeasureImageOutput };
   detectChunk: { input: DetectChunkInput; output: DetectChunkOutput };
-  linkTracks: { input: LinkTracksInput; output: Tracks };
-  linkFiles: { input: LinkFilesInput; output: LinkFilesOutput };
+  linkTracks: { input: LinkTracksInput; output: LinkTracksOutput };
   measureFlow: { input: MeasureFlowInput; output: FlowMeasures };
   judgeTracks: { input: MeasureFlowInput; output: TrackPopulations };
   measureFlowPart: { input: MeasureFlowPartInput; output: FlowPartResults[FlowPart] };

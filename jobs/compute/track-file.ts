@@ -7,9 +7,9 @@ export type TracksAt = Tracks | { path: string };
 /** "BDTR" read as a little-endian number. */
 const MAGIC = 0x52544442;
 const VERSION = 1;
-const HEADER_BYTES = 16;
+export const HEADER_BYTES = 16;
 /** Columns of points behind the starts of tracks, in this order; flags come last. */
-const COLUMNS = ['frame', 'xPx', 'yPx', 'sxPx', 'syPx', 'brightness', 'flags'] as const;
+export const POINT_COLUMNS = ['frame', 'xPx', 'yPx', 'sxPx', 'syPx', 'brightness', 'flags'] as const;
 
 const bytesOf = (view: ArrayBufferView): Uint8Array =>
   new Uint8Array(view.buffer, view.byteOffset, view.byteLength);
@@ -39,7 +39,7 @@ export class TrackFileWriter {
     const start = piece.start.subarray(0, piece.count + 1).map((at) => at + this.points);
     await this.put(start, HEADER_BYTES + 4 * this.tracks);
     let column = HEADER_BYTES + 4 * (this.size.tracks + 1);
-    for (const name of COLUMNS) {
+    for (const name of POINT_COLUMNS) {
       const values = piece[name];
       const width = values.BYTES_PER_ELEMENT;
       await this.put(values, column + width * this.points);
@@ -76,14 +76,19 @@ export async function writeTrackFile(path: string, tracks: Tracks): Promise<void
   await writer.close();
 }
 
+/** How many tracks and points a file has, from the numbers that it begins with. @throws RangeError */
+export function readHeader([magic, version, count, points]: Uint32Array): { count: number; points: number } {
+  if (magic !== MAGIC) throw new RangeError('These bytes are not tracks.');
+  if (version !== VERSION) throw new RangeError(`Got tracks v${version} when expected v${VERSION}.`);
+  return { count, points };
+}
+
 /** All tracks of a file, as views of its bytes. @throws RangeError when it is not a whole file of this version. */
 export async function readTrackFile(path: string): Promise<Tracks> {
   const bytes = await readFile(path);
   // Views of 32 bits need an address that 4 divides: large files have one, small ones are copied.
   const { buffer, byteOffset, length } = bytes.byteOffset % 4 === 0 ? bytes : Buffer.from(new Uint8Array(bytes).buffer); // prettier-ignore
-  const [magic, version, count, points] = new Uint32Array(buffer, byteOffset, length >= HEADER_BYTES ? 4 : 0);
-  if (magic !== MAGIC) throw new RangeError('These bytes are not tracks.');
-  if (version !== VERSION) throw new RangeError(`Got tracks v${version} when expected v${VERSION}.`);
+  const { count, points } = readHeader(new Uint32Array(buffer, byteOffset, length >= HEADER_BYTES ? 4 : 0));
   const expected = HEADER_BYTES + 4 * (count + 1) + 25 * points;
   if (length !== expected) throw new RangeError(`Got ${length} bytes when the tracks have ${expected}.`);
   let at = byteOffset + HEADER_BYTES;

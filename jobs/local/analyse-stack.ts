@@ -123,7 +123,7 @@ async function analyseFrames(
   const chunkPaths = found.map((_, chunk) => spotsPath(workDir, chunk));
   await clock.time('link-tracks', (options) =>
     pool.run(
-      'linkFiles',
+      'linkTracks',
       { chunkPaths, tracksPath, image, recipe },
       { ...options, timeoutMs: LONG_TIMEOUT_MS },
     ),

@@ -85,13 +85,13 @@ export class CopyRows {
 export async function copyRows<T>(
   table: string,
   columns: readonly string[],
-  items: Iterable<T>,
+  items: Iterable<T> | AsyncIterable<T>,
   writeRow: (rows: CopyRows, item: T) => void,
   transaction: Transaction,
 ): Promise<void> {
-  function* pieces() {
+  async function* pieces() {
     const rows = new CopyRows();
-    for (const item of items) {
+    for await (const item of items) {
       writeRow(rows, item);
       if (rows.full) yield rows.take();
     }

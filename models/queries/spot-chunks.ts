@@ -36,17 +36,28 @@ export async function saveSpotChunk(
   return rows[0].stored;
 }
 
+/** The packed spots of the chunks in order, one chunk at a time. */
+export async function* streamSpotChunks(labId: string, analysisId: string): AsyncGenerator<Uint8Array> {
+  for (let after = -1; ;) {
+    const [row] = await withRawClient((client) =>
+      queryArrays<[number, Buffer]>(
+        client,
+        `SELECT c.chunk, c.spots FROM spot_chunks c JOIN analyses a ON a.id = c.analysis_id
+         WHERE a.lab_id = $1 AND c.analysis_id = $2 AND c.chunk > $3 ORDER BY c.chunk LIMIT 1`,
+        [labId, analysisId, after],
+      ),
+    );
+    if (!row) return;
+    yield row[1];
+    after = row[0];
+  }
+}
+
 /** The packed spots of all chunks in order. */
 export async function readSpotChunks(labId: string, analysisId: string): Promise<Uint8Array[]> {
-  const rows = await withRawClient((client) =>
-    queryArrays<[Buffer]>(
-      client,
-      `SELECT c.spots FROM spot_chunks c JOIN analyses a ON a.id = c.analysis_id
-       WHERE a.lab_id = $1 AND c.analysis_id = $2 ORDER BY c.chunk`,
-      [labId, analysisId],
-    ),
-  );
-  return rows.map(([spots]) => spots);
+  const chunks: Uint8Array[] = [];
+  for await (const spots of streamSpotChunks(labId, analysisId)) chunks.push(spots);
+  return chunks;
 }
 
 /** Spots found in every frame so far, chunk after chunk. */

@@ -8,7 +8,7 @@ export interface LinkedCounts {
   bridgedPoints: number;
 }
 
-export async function countLinked(analysisId: string, transaction: Transaction): Promise<LinkedCounts> {
+export async function countLinked(analysisId: string, transaction?: Transaction): Promise<LinkedCounts> {
   const row = await selectRow<LinkedCounts>(
     `SELECT count(*)::int AS tracks, coalesce(sum(points), 0)::int AS "trackPoints",
        coalesce(sum(bridged), 0)::int AS "bridgedPoints"

@@ -1,5 +1,6 @@
 import { QueryTypes } from 'sequelize';
 import { getSequelize } from '../database';
+import { selectRows } from './select';
 
 export interface NewWorker {
   id: string;
@@ -33,6 +34,14 @@ export async function endWorker(id: string): Promise<void> {
   await getSequelize().query('UPDATE workers SET stopped_at = now(), job_run_id = NULL WHERE id = $1', {
     bind: [id],
   });
+}
+
+/** Workers that have not ended, as far as is known: one that was killed counts for an hour more. */
+export async function liveWorkerIds(): Promise<string[]> {
+  const rows = await selectRows<{ id: string }>(
+    "SELECT id FROM workers WHERE stopped_at IS NULL AND heartbeat_at > now() - interval '1 hour'",
+  );
+  return rows.map(({ id }) => id);
 }
 
 /** Workers that gave a sign of life within the last `silenceMs`. */

@@ -32,7 +32,7 @@ export async function replaceTracks(
   }
   if (rows.length === 0) return;
   const tracks = rows.map(({ track }) => track).sort((a, b) => a.track - b.track);
-  await writeTrackSlices(analysisId, tracks, revision, transaction);
+  await writeTrackSlices(analysisId, () => tracks, revision, transaction);
   await execute(
     `UPDATE tracks SET population = m.population, p_trapped = m.p_trapped, mean_speed_m_s = m.speed,
        changed = m.changed, given = m.given::jsonb

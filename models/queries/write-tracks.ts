@@ -10,15 +10,18 @@ import { idBytes } from './id-bytes';
 const TRACK_COLUMNS = ['analysis_id', 'number', 'born_revision', 'first_frame', 'last_frame', 'points', 'bridged', 'mean_x_px', 'mean_y_px', 'mean_brightness', 'flags']; // prettier-ignore
 const POINT_COLUMNS = ['analysis_id', 'block', 'number', 'born_revision', 'first_frame', 'points'];
 
+/** Tracks in the order of their numbers, from the first one on each time they are asked for. */
+export type TrackSlices = () => Iterable<TrackSlice> | AsyncIterable<TrackSlice>;
+
 /** Stores the tracks that linking made, as revision 0. */
 export function writeTracks(analysisId: string, tracks: Tracks, transaction: Transaction): Promise<void> {
-  return writeTrackSlices(analysisId, Array.from(slices(tracks)), 0, transaction);
+  return writeTrackSlices(analysisId, () => slices(tracks), 0, transaction);
 }
 
 /** Stores tracks that are valid from a revision on, by COPY. */
 export async function writeTrackSlices(
   analysisId: string,
-  tracks: readonly TrackSlice[],
+  tracks: TrackSlices,
   bornRevision: number,
   transaction: Transaction,
 ): Promise<void> {
@@ -26,7 +29,7 @@ export async function writeTrackSlices(
   await copyRows(
     'tracks',
     TRACK_COLUMNS,
-    tracks,
+    tracks(),
     (rows, slice) => {
       const mean = meansOf(slice);
       const last = slice.frame.length - 1;
@@ -39,7 +42,7 @@ export async function writeTrackSlices(
   await copyRows(
     'track_points',
     POINT_COLUMNS,
-    blocks(tracks),
+    blocks(tracks()),
     (rows, { slice, from, to }) => {
       const firstFrame = slice.frame[from];
       rows.row(POINT_COLUMNS.length).bytes(id).int4(blockOf(firstFrame)).int4(slice.track);
@@ -54,8 +57,10 @@ function* slices(tracks: Tracks): Generator<TrackSlice> {
   for (let i = 0; i < tracks.count; i++) yield trackSlice(tracks, i);
 }
 
-function* blocks(tracks: readonly TrackSlice[]): Generator<{ slice: TrackSlice; from: number; to: number }> {
-  for (const slice of tracks) {
+async function* blocks(
+  tracks: ReturnType<TrackSlices>,
+): AsyncGenerator<{ slice: TrackSlice; from: number; to: number }> {
+  for await (const slice of tracks) {
     let from = 0;
     while (from < slice.frame.length) {
       const end = (blockOf(slice.frame[from]) + 1) * BLOCK_FRAMES - slice.frame[from];

@@ -12,9 +12,9 @@ const hold = [];
 process.on('disconnect', () => process.exit(0));
 process.on('message', ({ id, input }) => {
   const done = (output) => process.send({ id, kind: 'done', output });
-  const asked = input.chunks[0];
+  const asked = input.chunkPaths[0];
   if (asked === 'echo') return done(input);
-  if (asked === 'pid') return setTimeout(() => done(process.pid), input.chunks[1] ?? 0);
+  if (asked === 'pid') return setTimeout(() => done(process.pid), input.chunkPaths[1] ?? 0);
   if (asked === 'env') return done(Object.keys(process.env));
   if (asked === 'hang') for (;;) {}
   if (asked === 'crash') process.exit(7);
@@ -50,8 +50,9 @@ function makePool(size: number, options: PoolOptions = {}): ComputePool {
   return pool;
 }
 
-/** What the child is asked to do travels as the first chunk. */
-const ask = (...words: unknown[]) => ({ chunks: words, image: {}, recipe: {} }) as unknown as LinkTracksInput;
+/** What the child is asked to do travels in place of the paths. */
+const ask = (...words: unknown[]) =>
+  ({ chunkPaths: words, image: {}, recipe: {} }) as unknown as LinkTracksInput;
 const pidOf = async (pool: ComputePool, ms = 0, options = {}) =>
   (await pool.run('linkTracks', ask('pid', ms), options)) as unknown as number;
 
@@ -70,8 +71,10 @@ test('typed arrays come back as they were sent', async () => {
     flags: Uint8Array.of(1, 2),
     frame: Uint32Array.of(4e9),
   };
-  const got = (await makePool(1).run('linkTracks', ask('echo', sent))) as unknown as { chunks: unknown[] };
-  expect(got.chunks[1]).toEqual(sent);
+  const got = (await makePool(1).run('linkTracks', ask('echo', sent))) as unknown as {
+    chunkPaths: unknown[];
+  };
+  expect(got.chunkPaths[1]).toEqual(sent);
 });
 
 test('a child is not told the address of the database nor any key', async () => {

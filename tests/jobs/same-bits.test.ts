@@ -1,10 +1,11 @@
-import { mkdtemp, rm } from 'node:fs/promises';
+import { mkdtemp, rm, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import { chunksOf } from '@/jobs/chunk-plan';
 import { kernelsOfThisProcess } from '@/jobs/compute/kernels';
 import { ComputePool } from '@/jobs/compute/pool';
+import { readTrackFile } from '@/jobs/compute/track-file';
 import { makeDemoStack } from '@/jobs/demo/make-demo-stack';
 import { localStack } from '@/jobs/local/local-stack';
 import { measureFlowIn } from '@/jobs/local/measure-flow-in';
@@ -96,12 +97,11 @@ test.each([1, 2, 4])(
       const spots = concatSpots(parts.map((part) => decodeSpots(new Uint8Array(part.spots))));
       expect(spots.count).toBeGreaterThan(SIZE.frames * 5);
       expect(Buffer.from(encodeSpots(spots)).equals(expected.spots), `chunks of ${chunkFrames}`).toBe(true);
-      const tracks = await pool.run('linkTracks', {
-        chunks: parts.map((part) => part.spots),
-        image: IMAGE,
-        recipe,
-      });
-      expect(tracks).toEqual(expected.tracks);
+      const chunkPaths = parts.map((_, i) => join(stackDir, `spots-${i}.bin`));
+      await Promise.all(parts.map((part, i) => writeFile(chunkPaths[i], part.spots)));
+      const tracksPath = join(stackDir, 'tracks.bin');
+      await pool.run('linkTracks', { chunkPaths, tracksPath, image: IMAGE, recipe });
+      expect(await readTrackFile(tracksPath)).toEqual(expected.tracks);
     }
   },
   3 * MINUTES,

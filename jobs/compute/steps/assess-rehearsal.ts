@@ -2,7 +2,7 @@ import { readFile } from 'node:fs/promises';
 import { assessRehearsal as assess } from '@/tracking/rehearsal/assess-rehearsal';
 import type { RehearsalAssessment } from '@/tracking/rehearsal/assessment';
 import { decodeTruth } from '@/tracking/rehearsal/truth';
-import { concatSpots, decodeSpots } from '@/tracking/spots';
+import { takeEncodedRuns } from '@/tracking/spots';
 import type { AssessRehearsalInput } from '../tasks';
 import type { WorkContext } from './work-context';
 
@@ -14,6 +14,6 @@ export async function assessRehearsal(
   const truth = decodeTruth(await readFile(truthPath));
   onProgress(0.1);
   // Copies: a view into a larger buffer can't be decoded in place.
-  const spots = concatSpots(chunks.map((chunk) => decodeSpots(new Uint8Array(chunk))));
+  const spots = takeEncodedRuns(chunks);
   return assess(truth, { ...found, spots });
 }

@@ -2,12 +2,15 @@ import { mkdtemp, readFile, rm, truncate, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterAll, beforeAll, expect, test } from 'vitest';
+import { readTrackSlices } from '@/jobs/compute/read-track-slices';
 import { openSpotFiles } from '@/jobs/compute/spot-files';
-import { linkFiles } from '@/jobs/compute/steps/link-tracks';
+import { linkTracks } from '@/jobs/compute/steps/link-tracks';
 import { readTrackFile, TrackFileWriter, tracksAt, writeTrackFile } from '@/jobs/compute/track-file';
+import { packTracks } from '@/tracking/corrections/pieces';
 import { linkSpots } from '@/tracking/link';
 import { createRandom } from '@/tracking/random';
 import { createSpotSink, encodeSpots, sliceSpots } from '@/tracking/spots';
+import type { TrackSlice } from '@/tracking/track-slice';
 import type { Spots, Tracks } from '@/tracking/types';
 
 /** Three windows of linking, and more spots than motion is learned from. */
@@ -70,8 +73,8 @@ test('linking from files to a file gives the bits of linking what is held, in ho
   expect(Math.max(...Array.from({ length: expected.count }, (_, i) => expected.start[i + 1] - expected.start[i]))).toBeGreaterThan(1000); // prettier-ignore
   for (const files of [1, 7]) {
     const tracksPath = join(folder, `tracks-${files}.bin`);
-    const recipe = RECIPE as Parameters<typeof linkFiles>[0]['recipe'];
-    const told = await linkFiles(
+    const recipe = RECIPE as Parameters<typeof linkTracks>[0]['recipe'];
+    const told = await linkTracks(
       { chunkPaths: await inFiles(files), tracksPath, image: IMAGE, recipe },
       { onProgress: () => undefined },
     );
@@ -105,6 +108,29 @@ test('files out of order, of too many frames, cut short or of something else are
   await writeFile(paths[2], 'something else entirely');
   expect(() => openSpotFiles(paths, FRAMES)).toThrow('These bytes are not spots');
   await expect(readTrackFile(paths[2])).rejects.toThrow('These bytes are not tracks');
+});
+
+test('tracks come one by one from their file as they went in, however many are read at once', async () => {
+  const path = join(folder, 'one-by-one.bin');
+  const few = linkSpots(sliceSpots(spots, 0, 600), IMAGE, RECIPE);
+  const none = linkSpots(sliceSpots(spots, 0, 0), IMAGE, RECIPE);
+  // So many points that they take several pieces.
+  const many = linkSpots(spots, IMAGE, RECIPE);
+  expect(many.frame.length).toBeGreaterThan(45_000);
+  for (const tracks of [many, few, none]) {
+    await writeTrackFile(path, tracks);
+    const slices: TrackSlice[] = [];
+    for await (const slice of readTrackSlices(path)) slices.push(slice);
+    const packed = packTracks(slices);
+    expectSameTracks(packed.tracks, tracks);
+    expect(packed.number).toEqual(Uint32Array.from({ length: tracks.count }, (_, i) => i));
+  }
+  await writeTrackFile(path, few);
+  await truncate(path, (await readFile(path)).length - 1);
+  const readAll = async () => {
+    for await (const slice of readTrackSlices(path)) expect(slice.frame.length).toBeGreaterThan(0);
+  };
+  await expect(readAll()).rejects.toThrow('ends too early');
 });
 
 test('tracks come back from their file, none too, and a writer that was given others than announced says so', async () => {
