@@ -12,6 +12,7 @@ import { buildExportJob } from './build-export';
 import { buildPackage } from './exports/build-package';
 import { dropExport, placePackage, storePackage, workFolder } from './exports/export-folder';
 import { keepOnce, readKept } from './exports/kept-json';
+import { planStrips } from './exports/strip-files';
 import { FinalFailure } from './final-failure';
 import type { JobHandler } from './job-context';
 
@@ -20,7 +21,7 @@ const TELL_MS = 400;
 
 export const buildExportHandler: JobHandler = {
   definition: buildExportJob,
-  async run({ claim, signal, report, commit }) {
+  async run({ claim, signal, compute, report, commit }) {
     const { labId, subjectId, attempt } = claim;
     const work = await exportWork(labId, subjectId);
     if (!work) return commit(async () => undefined);
@@ -38,7 +39,7 @@ export const buildExportHandler: JobHandler = {
     try {
       tell('collect', 0);
       const plan = await planOf(labId, folder, work, attempt);
-      const built = await buildPackage({ labId, plan, folder, attempt, signal, tell });
+      const built = await buildPackage({ labId, plan, folder, attempt, signal, compute, tell });
       await telling;
       await storePackage(subjectId, built.path);
       await commit(async (transaction) => {
@@ -69,6 +70,7 @@ async function planOf(
   const kept = await readKept<ExportPlan>(path);
   if (kept) return kept;
   const analyses = await planAnalyses(labId, request.analyses);
+  if (request.figures) for (const one of analyses) one.strips = await planStrips(labId, one);
   const lab = await models().Lab.findByPk(labId);
   const plan: ExportPlan = {
     title,

@@ -1,37 +1,32 @@
-import { access } from 'node:fs/promises';
-import { candidatesForStrips, stripSourceOf } from '@/models/queries/candidate-strips';
+import { rm } from 'node:fs/promises';
 import { composeStripsJob } from './compose-strips';
+import { drawStrips } from './draw-strips';
 import type { JobHandler } from './job-context';
-import { LONG_TIMEOUT_MS } from './job-timeouts';
-import { candidateStripFile, stackFolder } from './stack-folder';
+import { objectStore } from './object-store';
+import { candidateStripFile } from './stack-folder';
+import { sizeAtHome, storeFile } from './stack-store';
 import { tellOfDisagreements } from './tell-of-review';
-
-/** Strips composed in one go: seconds of work, so that a stop is heard soon. */
-const AT_ONCE = 20;
 
 export const composeStripsHandler: JobHandler<Record<string, never>> = {
   definition: composeStripsJob,
   async run({ claim, signal, compute, report, commit }) {
     const { labId, subjectId: analysisId } = claim;
-    const source = await stripSourceOf(labId, analysisId);
-    if (source) {
-      const fileOf = (id: string) => candidateStripFile(source.recordingId, id, source.tracksRevision);
-      const missing: string[] = [];
-      for (const id of source.candidateIds) if (!(await isThere(fileOf(id)))) missing.push(id);
-      for (let i = 0; i < missing.length && !signal.aborted; i += AT_ONCE) {
-        const strips = await candidatesForStrips(labId, missing.slice(i, i + AT_ONCE));
-        await compute(
-          'composeStrips',
-          {
-            stackDir: stackFolder(source.recordingId),
-            contrast: source.contrast,
-            pixelSizeM: source.pixelSizeM,
-            frameIntervalS: source.frameIntervalS,
-            strips: strips.map(({ id, ...strip }) => ({ ...strip, path: fileOf(id) })),
-          },
-          { timeoutMs: LONG_TIMEOUT_MS },
-        );
-        report(Math.min(1, (i + AT_ONCE) / missing.length));
+    let recordingId = '';
+    const made: string[] = [];
+    await drawStrips({ labId, analysisId, signal, compute, onProgress: report }, async (source) => {
+      recordingId = source.recordingId;
+      const missing: { id: string; path: string }[] = [];
+      for (const id of source.candidateIds) {
+        const path = candidateStripFile(recordingId, id, source.tracksRevision);
+        if ((await sizeAtHome(recordingId, path)) === null) missing.push({ id, path });
+      }
+      made.push(...missing.map(({ path }) => path));
+      return missing;
+    });
+    if (objectStore() && !signal.aborted) {
+      for (const path of made) {
+        await storeFile(recordingId, path, path);
+        await rm(path, { force: true });
       }
     }
     await commit((transaction) => tellOfDisagreements(labId, analysisId, transaction));
@@ -40,9 +35,3 @@ export const composeStripsHandler: JobHandler<Record<string, never>> = {
   onGivenUp: ({ labId, subjectId }, _reason, transaction) =>
     tellOfDisagreements(labId, subjectId, transaction),
 };
-
-const isThere = (path: string): Promise<boolean> =>
-  access(path).then(
-    () => true,
-    () => false,
-  );

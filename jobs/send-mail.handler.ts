@@ -1,4 +1,3 @@
-import { readFile } from 'node:fs/promises';
 import { baseUrl } from '@/lib/env';
 import { formatMoment } from '@/lib/format/time';
 import { invitationPath, makeLinkSecret, NEW_PASSWORD_MS, newPasswordPath } from '@/lib/link-secret';
@@ -13,6 +12,7 @@ import type { JobHandler } from './job-context';
 import { deliverMail } from './mail/deliver-mail';
 import { sendMailJob, type SendMailPayload } from './send-mail';
 import { candidateStripFile } from './stack-folder';
+import { readStackFile } from './stack-store';
 
 export const sendMailHandler: JobHandler<SendMailPayload> = {
   definition: sendMailJob,
@@ -65,7 +65,9 @@ async function picturesOf(order: MailOrder): Promise<{ name: string; png: Buffer
   const { recordingId, tracksRevision } = order;
   const found = await Promise.all(
     order.candidates.slice(0, STRIPS_MOST).map(async ({ id, event }) => {
-      const png = await readFile(candidateStripFile(recordingId, id, tracksRevision)).catch(() => null);
+      const png = await readStackFile(recordingId, candidateStripFile(recordingId, id, tracksRevision)).catch(
+        () => null,
+      );
       return png ? [{ name: stripName(event), png }] : [];
     }),
   );

@@ -23,7 +23,7 @@ export function ContentsNote({ analyses, points, formats, figures }: ContentsNot
           <li>Tracks, velocities, distributions, spreading, candidates, estimates</li>
           <li>Corrections, judgements, conditions, recipes, code versions, SHA-256 of every recording</li>
           {formats.length > 0 ? <li>Tables as {formats.map((format) => NAMES[format]).join(', ')}</li> : null}
-          {figures ? <li>Figures with their numbers</li> : null}
+          {figures ? <li>Figures with their numbers, frames of reconnections</li> : null}
           <li>Data dictionary, Data Package, RO-Crate, checksums</li>
         </ul>
       )}

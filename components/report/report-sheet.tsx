@@ -6,10 +6,12 @@ import { Quantity } from '@/components/ui/quantity';
 import { Lede, PageTitle, Section, Sheet } from '@/components/ui/sheet';
 import { Cell, CellNote, HeadCell, Row, Table } from '@/components/ui/table';
 import { countOf } from '@/lib/format/count';
+import type { ReportedEvent } from '@/lib/report/events';
 import { METHODS_IN_WORDS } from '@/lib/report/methods';
 import type { CampaignView } from '@/lib/views/campaign-view';
 import type { CompareView } from '@/lib/views/compare-view';
 import { ReportConditions, type ReportedConditions } from './report-conditions';
+import { ReportEvents } from './report-events';
 import { ReportFigures } from './report-figures';
 
 const GAMMA = { siPerUnit: 1e4, unit: 's/cm^2' };
@@ -31,6 +33,7 @@ interface ReportSheetProps {
   campaign: CampaignView;
   comparison: CompareView;
   conditions: readonly ReportedConditions[];
+  events: readonly ReportedEvent[];
   /** Sentences that a reader must know. */
   cautions: readonly { about: string; words: string }[];
   safety: readonly string[];
@@ -41,7 +44,7 @@ interface ReportSheetProps {
 
 /** A campaign on paper: conditions, methods in words, figures, estimates, cautions and sign-offs. */
 export function ReportSheet(props: ReportSheetProps) {
-  const { laboratory, campaign, comparison, conditions, cautions, safety, origins, at } = props;
+  const { laboratory, campaign, comparison, conditions, events, cautions, safety, origins, at } = props;
   const { runs, fits } = comparison;
   const analysed = runs.filter(({ analysisId }) => analysisId !== null);
   const signed = runs.filter(({ signedOff }) => signedOff !== null);
@@ -108,6 +111,7 @@ export function ReportSheet(props: ReportSheetProps) {
               ) : null,
             )}
           </Section>
+          <ReportEvents events={events} />
         </>
       )}
       <Section title="Cautions">

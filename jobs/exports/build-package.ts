@@ -11,17 +11,22 @@ import { roCrate } from '@/lib/exports/ro-crate';
 import { sortedJson } from '@/lib/exports/sorted-json';
 import { ANALYSIS_TABLES, TRACKS, VELOCITIES } from '@/lib/exports/table-definitions';
 import { estimatesJson } from '@/lib/tables/estimates-json';
+import type { JobContext } from '../job-context';
 import { figuresOf } from './analysis-figure-files';
 import { finishedFiles, sha256OfFile, type FilesMade, type WorkPlace } from './finished-files';
 import { smallCsv } from './small-tables';
+import { writeStrips } from './strip-files';
 import { piecesOf, writeTable } from './write-tables';
 import { ZipWriter } from './zip-writer';
 
 export interface BuildContext extends WorkPlace {
   labId: string;
   plan: ExportPlan;
+  compute: JobContext<never>['compute'];
   tell: (stage: ExportStage, share: number) => void;
 }
+
+const STRIPS_TITLE = 'Frames around the closest approach of a reconnection candidate, with both tracks';
 
 export interface BuiltPackage {
   path: string;
@@ -34,7 +39,7 @@ export async function buildPackage(context: BuildContext): Promise<BuiltPackage>
   await dropOtherTries(context);
   const files: PackedFile[] = [];
   files.push(...(await allTables(context)));
-  if (context.plan.figures) files.push(...(await allFigures(context)));
+  if (context.plan.figures) files.push(...(await allFigures(context)), ...(await allStrips(context)));
   files.push(...(await allTexts(context)));
   files.sort((a, b) => (a.path < b.path ? -1 : 1));
   return packed(context, [...files, ...(await descriptions(context, files))]);
@@ -108,6 +113,17 @@ async function allFigures(context: BuildContext): Promise<PackedFile[]> {
       files.push(...described(made, analysis, figure.title, null));
       context.tell('figures', (i + (k + 1) / figures.length) / analyses.length);
     }
+  }
+  return files;
+}
+
+async function allStrips(context: BuildContext): Promise<PackedFile[]> {
+  const files: PackedFile[] = [];
+  for (const analysis of context.plan.analyses) {
+    if (!analysis.strips?.length) continue;
+    const part = { name: `${analysis.folder}-strips`, into: `${analysis.folder}/strips` };
+    const made = await finishedFiles(context, part, (folder) => writeStrips(context, analysis, folder));
+    files.push(...described(made, analysis, STRIPS_TITLE, null));
   }
   return files;
 }

@@ -107,6 +107,9 @@ export function readmeText(plan: ExportPlan): string {
     '| corrections.csv, judgements.csv | what people changed and decided |',
     '| estimates.json | estimates with the inputs that they came from |',
     '| details.json | what else was measured, with notes: law of a growth or decay, beside what is expected, shape of lines |',
+    ...(plan.analyses.some(({ strips }) => strips?.length)
+      ? ['| strips/ | frames around closest approach of each reconnection, with both tracks, times and scale bar; the name has the number of the event |'] // prettier-ignore
+      : []),
     '| provenance.json | input with its SHA-256, conditions, recipe, code version, people |',
     '',
     'Every column of every table stands in `data-dictionary.csv` with type, unit and meaning; so do the units in the files themselves: in the column names (CSV), in the key-value metadata (Parquet), in the attribute `unit` (HDF5), in the arrays `columns` and `units` (NumPy).',

@@ -35,6 +35,12 @@ export interface CorrectionStep {
   at: string;
 }
 
+/** A candidate whose frames around closest approach are in the package as a picture. */
+export interface PlannedStrip {
+  candidateId: string;
+  event: number;
+}
+
 /** All of an analysis that a package holds but tracks and velocities, which are read as they are written. */
 export interface PlannedAnalysis {
   id: string;
@@ -70,6 +76,8 @@ export interface PlannedAnalysis {
   verdicts: VerdictText[];
   judgements: JudgementStep[];
   corrections: CorrectionStep[];
+  /** Left out where no figures are wanted. */
+  strips?: PlannedStrip[];
 }
 
 /** What a package is made of, fixed when its building begins. */

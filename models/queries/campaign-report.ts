@@ -4,6 +4,7 @@ import type { RunConditions } from '@/tracking/flow/run-conditions';
 import type { Conditions, Recipe } from '@/tracking/types';
 import type { RunConditionsInput } from '@/lib/schemas/conditions';
 import type { CompareView } from '@/lib/views/compare-view';
+import { candidatesToShow, type ShownCandidate } from './candidates-to-show';
 import { compareRuns } from './compare';
 import { CONDITION_COLUMNS, conditionsOf, type ConditionRow } from './run-columns';
 import { selectRows } from './select';
@@ -41,9 +42,14 @@ export interface CampaignReport {
   comparison: CompareView;
   runs: ReportedRun[];
   analyses: ReportedAnalysis[];
+  /** Reconnections that the report shows with their frames. */
+  events: ShownCandidate[];
 }
 
 const CONDITIONS = Object.values(CONDITION_COLUMNS).map((column) => `r.${column}`).join(', '); // prettier-ignore
+
+/** A report shows what a reconnection looks like; all of them are in the data package. */
+const EVENTS_OF_A_RUN = 2;
 
 /** Everything that the printed report of a campaign tells. */
 export async function campaignReport(labId: string, campaignId: string): Promise<CampaignReport> {
@@ -70,5 +76,5 @@ export async function campaignReport(labId: string, campaignId: string): Promise
      WHERE a.lab_id = $1 AND a.id = ANY($2::uuid[]) ORDER BY r.created_at, r.id, m.tracks_revision DESC`,
     [labId, ids],
   );
-  return { comparison, runs, analyses };
+  return { comparison, runs, analyses, events: await candidatesToShow(labId, ids, EVENTS_OF_A_RUN) };
 }

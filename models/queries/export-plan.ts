@@ -12,6 +12,7 @@ interface Row extends Omit<
   | 'verdicts'
   | 'judgements'
   | 'corrections'
+  | 'strips'
   | 'campaign'
   | 'run'
   | 'recording'

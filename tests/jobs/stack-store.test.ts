@@ -1,4 +1,4 @@
-import { mkdir, mkdtemp, readdir, rm } from 'node:fs/promises';
+import { mkdir, mkdtemp, readdir, readFile, rm } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterAll, beforeAll, expect, test } from 'vitest';
@@ -14,6 +14,7 @@ import {
   withLocalStack,
 } from '@/jobs/stack-store';
 import { newId } from '@/lib/ids';
+import { filmOf } from '@/lib/review/film';
 import type { StackReport } from '@/stacks/stack-report';
 import { openStack } from '@/stacks/open-stack';
 import { CONDITIONS, SCENE } from '../helpers/demo-recording';
@@ -96,6 +97,17 @@ test('a stack in an object store is checked, read by range and computed on as on
     Buffer.from((await pool.run('detectChunk', { stackDir, ...chunk })).spots);
   expect((await spots(place)).equals(await spots(local))).toBe(true);
   expect(store.asked.get('GET range')).toBeGreaterThan(2 * FRAMES);
+
+  const path = { frame: [0, FRAMES - 1], x: [30, 50], y: [40, 40], bridged: [false, false] };
+  const paths = [{ track: 1, population: 0, ...path }, { track: 2, population: 1, ...path, y: [50, 40] }]; // prettier-ignore
+  const film = filmOf({ meetingFrame: 6, xPx: 42, yPx: 42, paths, image: { frames: FRAMES, width: 96, height: 80 } }); // prettier-ignore
+  const strip = async (stackDir: typeof place, path: string) => {
+    const shared = { contrast: { low: 0, high: 4000 }, pixelSizeM: CONDITIONS.pixelSize_m, frameIntervalS: 0.004 }; // prettier-ignore
+    await pool.run('composeStrips', { stackDir, ...shared, strips: [{ path, film, paths }] });
+    return readFile(path);
+  };
+  const [near, far] = [join(folder, 'near.png'), join(folder, 'far.png')];
+  expect((await strip(place, far)).equals(await strip(local, near))).toBe(true);
 }, 240_000);
 
 test('a stack that is removed leaves nothing in the store', async () => {

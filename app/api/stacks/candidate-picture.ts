@@ -1,6 +1,6 @@
-import { readFile } from 'node:fs/promises';
 import { askForStrips } from '@/jobs/compose-strips';
 import { candidateStripFile } from '@/jobs/stack-folder';
+import { readStackFile, sizeAtHome } from '@/jobs/stack-store';
 import { LabError } from '@/lib/errors';
 import { getSequelize } from '@/models/database';
 import { candidateOnFilm } from '@/models/queries/candidate-detail';
@@ -43,12 +43,12 @@ export async function stripPicture(labId: string, candidateId: string, sight: Si
   const source = await stripSourceOf(labId, analysisId);
   if (!source) throw new LabError('NOT_COMPUTED', 'There is no strip: the analysis is not done.');
   const file = candidateStripFile(source.recordingId, candidateId, source.tracksRevision);
-  const png = await readFile(file).catch(() => null);
-  if (!png) {
+  if ((await sizeAtHome(source.recordingId, file)) === null) {
     await getSequelize().transaction((transaction) => askForStrips(labId, analysisId, transaction));
     throw new LabError('NOT_COMPUTED', 'The strip is being composed. Ask again in a few seconds.', {
       headers: { 'Retry-After': '3' },
     });
   }
+  const png = await readStackFile(source.recordingId, file);
   return new Response(new Uint8Array(png), { headers: { ...HEADERS, 'Content-Type': 'image/png' } });
 }

@@ -271,4 +271,44 @@ export function theyJudge(): void {
     await page.getByText(`${events} events confirmed by people`).waitFor({ timeout: 60_000 });
     expect(visit.complaints).toEqual([]);
   }, 240_000);
+
+  it('the report of the campaign shows the frames of events, and a package holds those of all', async () => {
+    const { page } = visit;
+    const [{ campaignId }] = await selectRows<{ campaignId: string }>(
+      `SELECT r.campaign_id AS "campaignId" FROM analyses a JOIN recordings g ON g.id = a.recording_id
+         JOIN runs r ON r.id = g.run_id WHERE a.id = $1`,
+      [analysisId],
+    );
+    await page.goto(`/campaigns/${campaignId}/report`);
+    const strips = page.getByRole('img', { name: /^Frames around the closest approach of candidate/ });
+    await strips.nth(1).waitFor({ timeout: 60_000 });
+    await until(
+      () => strips.evaluateAll((images) => images.map((image) => (image as HTMLImageElement).naturalWidth)),
+      (widths) => widths.length === 2 && widths.every((width) => width > 600),
+      { withinMs: 30_000, everyMs: 200 },
+    );
+    await page.getByText('an event by people’s verdict').first().waitFor();
+    await looksRight(page, 'report-of-judged-campaign-dark');
+
+    const pi = new ApiScript(server.baseUrl, lab.people.principal_investigator.token);
+    const wish = { title: 'Judged', formats: ['csv'], figures: true, licence: 'CC-BY-4.0', analyses: [analysisId], contributors: [] }; // prettier-ignore
+    const { id } = await pi.post<{ id: string }>('/api/v1/exports', wish);
+    await until(
+      () => pi.json<{ state: string }>(`/api/v1/exports/${id}`),
+      ({ state }) => state === 'done',
+      { withinMs: 90_000, everyMs: 300 },
+    );
+    const zip = Buffer.from(await (await pi.request(`/api/v1/exports/${id}/file`)).arrayBuffer());
+    const packed = new Set(zip.toString('latin1').match(/analysis-001\/strips\/candidate-\d{4}\.png/g));
+    const confirmed = await selectRows<{ event: number }>(
+      "SELECT c.event FROM candidates c JOIN candidate_outcomes o ON o.candidate_id = c.id WHERE c.analysis_id = $1 AND o.verdict = 'yes' ORDER BY 1", // prettier-ignore
+      [analysisId],
+    );
+    expect(confirmed.length).toBeGreaterThan(2);
+    expect([...packed].sort()).toEqual(
+      confirmed.map(({ event }) => `analysis-001/strips/candidate-${String(event).padStart(4, '0')}.png`),
+    );
+    // The browser tells of strips that were not composed yet when the report first asked for them.
+    expect(visit.complaints.filter((one) => !one.includes('404'))).toEqual([]);
+  }, 180_000);
 }

@@ -5,6 +5,7 @@ import { ReportSheet } from '@/components/report/report-sheet';
 import { ButtonLink } from '@/components/ui/button';
 import { PathThread } from '@/components/ui/path-thread';
 import { reportCautions } from '@/lib/report/cautions';
+import { reportedEvents } from '@/lib/report/events';
 import { campaignReport } from '@/models/queries/campaign-report';
 import { getCampaign } from '@/models/queries/campaigns';
 import { found } from '../../../found';
@@ -24,7 +25,7 @@ export default async function CampaignReportPage({ params }: Props) {
   const { campaignId } = await params;
   const viewer = await requireViewer('compare', `/campaigns/${campaignId}/report`);
   const campaign = await found(campaignId, (id) => getCampaign(viewer.labId, id));
-  const { comparison, runs, analyses } = await campaignReport(viewer.labId, campaign.id);
+  const { comparison, runs, analyses, events } = await campaignReport(viewer.labId, campaign.id);
   return (
     <>
       <PathThread
@@ -41,6 +42,7 @@ export default async function CampaignReportPage({ params }: Props) {
         campaign={campaign}
         comparison={comparison}
         conditions={runs.map(({ id, name, conditions }) => ({ id, name, conditions }))}
+        events={reportedEvents(events, analyses)}
         cautions={reportCautions(comparison, runs, analyses)}
         safety={[...new Set(runs.flatMap(({ safety }) => safety))]}
         origins={analyses.map(
