@@ -6,17 +6,10 @@ import type { TrappedPool } from './trapped-pool';
 
 /** Velocities beyond this many widths are left out: they belong to reconnections. */
 const TRIM = 2.5;
-/** Share of a Gaussian within that, its density there, and its variance within over the whole one. */
+/** Share of a Gaussian within that, its density there, and from them its variance within over the whole one. */
 const WITHIN = 0.987580669;
 const DENSITY_AT = 0.0175283005;
 export const TRIMMED_VARIANCE = 1 - (2 * TRIM * DENSITY_AT) / WITHIN;
-/**
- * Where chance widens a sample, the limit of the trimming widens with it: a change of the variance within
- * a fixed limit changes the result by so much more (influence function of the fixed point, a Gaussian
- * taken for granted).
- */
-const TRIMMING_GAIN =
-  1 / (1 - (TRIM * DENSITY_AT * (TRIM * TRIM - TRIMMED_VARIANCE)) / (WITHIN * TRIMMED_VARIANCE));
 const TRIM_ROUNDS = 20;
 /** Noise below this part of the variance hardly matters: the shortest such lag is taken. */
 const NOISE_PART_GOOD = 0.1;
@@ -96,7 +89,7 @@ function trimmedVelocities(context: EstimateContext, lagFrames: number): Trimmed
   noise /= n;
   const { mean, variance, limit, kept } = trimmed(values);
   const influence = new Float64Array(tracks.count);
-  const scale = TRIMMING_GAIN / (TRIMMED_VARIANCE * kept);
+  const scale = trimmingGain(values, { mean, variance }) / (TRIMMED_VARIANCE * kept);
   for (let i = 0; i < tracks.count; i++) {
     for (let k = from[i]; k < from[i + 1]; k++) {
       if (Math.abs(values[k] - mean) > limit) continue;
@@ -113,6 +106,32 @@ function pointsOf(tracks: Tracks, pool: TrappedPool): number {
   for (let i = 0; i < tracks.count; i++)
     if (pool.chosen[i] === 1) points += tracks.start[i + 1] - tracks.start[i];
   return points;
+}
+
+/** Widths are changed by this part, up and down, to see what that does to the variance within the limit. */
+const WIDTH_CHANGE = 0.1;
+/** A sample whose variance grows nearly as fast as the limit says nothing of its own width. */
+const GAIN_MOST = 4;
+
+/**
+ * Where chance widens a sample, the limit of the trimming widens with it: a change of the variance within a fixed
+ * limit changes the result by so much more (influence function of the fixed point). For a Gaussian it is 1.35;
+ * tails, of which much lies at the limit, make it larger.
+ */
+function trimmingGain(values: Float64Array, { mean, variance }: { mean: number; variance: number }): number {
+  const within = (part: number) => {
+    const limit = TRIM * Math.sqrt(variance * part);
+    let square = 0;
+    let kept = 0;
+    for (const v of values) {
+      if (Math.abs(v - mean) > limit) continue;
+      kept++;
+      square += (v - mean) ** 2;
+    }
+    return square / kept / (TRIMMED_VARIANCE * variance);
+  };
+  const slope = (within(1 + WIDTH_CHANGE) - within(1 - WIDTH_CHANGE)) / (2 * WIDTH_CHANGE);
+  return Math.min(GAIN_MOST, 1 / Math.max(1 / GAIN_MOST, 1 - Math.max(0, slope)));
 }
 
 /** Mean and variance of values of which those beyond 2.5 widths are left out, as of a Gaussian that was not trimmed. */

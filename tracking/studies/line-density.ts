@@ -132,7 +132,10 @@ export function lineDensityTrials(
   const volumeM3 = (sizePx * PIXEL_M) ** 2 * filled.sheetThicknessM;
   const freeTracersPerFrame = Math.round((lineDensityM2 * filled.beadsPerMetre * volumeM3) / 3);
   const factor = filled.curved
-    ? wavyVelocityFactor(filled.curved, 1 / Math.sqrt(lineDensityM2), SETTLING_S + 0.5 * FRAMES * INTERVAL_S)
+    ? wavyVelocityFactor(filled.curved, 1 / Math.sqrt(lineDensityM2), [
+        SETTLING_S,
+        SETTLING_S + FRAMES * INTERVAL_S,
+      ])
     : LINE_VELOCITY_FACTOR;
   // Vinen 1957: 1 / L grows by chi_2 kappa / (2 pi) per time; the method tells L of the middle.
   const decayPerS = one.decays
