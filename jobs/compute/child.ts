@@ -36,12 +36,29 @@ const TELL_MS = 200;
 
 const MICRO = 1e-6;
 
+/**
+ * After these a process may keep much memory that it no longer uses: millions of small arrays leave its allocator with
+ * room between what is still in use, which never goes back to the system.
+ */
+const LEAVES_ROOM: readonly TaskName[] = ['linkTracks', 'judgeTracks', 'measureFlowPart', 'measureFlow'];
+/** A process that has grown by more since its start, MB, is done with once such a task is over. */
+const GROWTH_MOST_MB = 64;
+let startedMB = 0;
+const residentMB = (): number => process.memoryUsage.rss() / 2 ** 20;
+
+function isSpent(task: TaskName): boolean {
+  if (!LEAVES_ROOM.includes(task) || residentMB() - startedMB < GROWTH_MOST_MB) return false;
+  freeMemory();
+  return residentMB() - startedMB > GROWTH_MOST_MB;
+}
+
 /** Web server and database come first on a busy machine: nobody clicks on a computation. */
 const NICE = 5;
 
 /** The main program of a child process: one computation after the other, until the parent is gone. */
 export function serveComputations(): void {
   setPriority(NICE);
+  startedMB = residentMB();
   process.on('disconnect', () => process.exit(0));
   // Ctrl-C reaches the whole group; the parent decides what becomes of its children.
   process.on('SIGINT', () => undefined);
@@ -62,7 +79,7 @@ async function serve({ id, task, input }: ToChild): Promise<void> {
     const work = WORK[task] as (input: unknown, context: WorkContext) => Promise<TaskOutput<TaskName>>;
     const output = await work(input, { onProgress });
     const { user, system } = process.cpuUsage(before);
-    tell({ id, kind: 'done', output, cpuS: MICRO * (user + system) });
+    tell({ id, kind: 'done', output, cpuS: MICRO * (user + system), spent: isSpent(task) });
   } catch (cause) {
     const { name, message, stack, field } = cause as Error & { field?: string };
     tell({ id, kind: 'failed', error: { name, message, stack, field } });

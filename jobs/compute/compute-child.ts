@@ -45,6 +45,7 @@ export class ComputeChild {
   private taken = false;
   private idleTimer: NodeJS.Timeout | undefined;
   private overMemory = false;
+  private spent = false;
   alive = true;
   lastKey: string | undefined;
 
@@ -81,10 +82,14 @@ export class ComputeChild {
     return this;
   }
 
-  /** Back to idle; an idle child does not keep its parent from ending, and ends itself after a while. */
+  /**
+   * Back to idle; an idle child does not keep its parent from ending, and ends itself after a while. One that has said
+   * that it keeps memory it can't give back ends at once.
+   */
   release(idleMs: number, gone: () => void): void {
     this.taken = false;
     if (!this.alive) return;
+    if (this.spent) return void this.kill();
     this.process.unref();
     this.process.channel?.unref();
     (this.process.stderr as unknown as { unref?: () => void } | null)?.unref?.();
@@ -148,6 +153,7 @@ export class ComputeChild {
     if (message.kind === 'progress') return current.onProgress?.(message.share);
     if (message.kind === 'done') {
       current.onCpu?.(message.cpuS);
+      this.spent = message.spent;
       return current.resolve(message.output);
     }
     const { name, message: sentence, stack, field } = message.error;

@@ -172,5 +172,5 @@ export type ToChild = { [K in TaskName]: { id: number; task: K; input: TaskInput
 /** From a child to the pool. */
 export type FromChild =
   | { id: number; kind: 'progress'; share: number }
-  | { id: number; kind: 'done'; output: TaskOutput<TaskName>; cpuS: number }
+  | { id: number; kind: 'done'; output: TaskOutput<TaskName>; cpuS: number; spent: boolean }
   | { id: number; kind: 'failed'; error: { name: string; message: string; stack?: string; field?: string } };

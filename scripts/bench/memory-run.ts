@@ -13,6 +13,7 @@ import { figure, textTable } from './text-table';
 /** Frames that are rendered; a longer stack repeats them. */
 const RENDERED = 60;
 const SEED = 1;
+const LOOK_MS = 20;
 const CONDITIONS = { pixelSize_m: 1e-5, frameInterval_s: 5e-3, sheetThickness_m: 1e-4 };
 
 /** How far a computing process's resident memory went above what it had after its start, MB. */
@@ -52,12 +53,27 @@ export async function runMemory(
   try {
     const startMB = await startedMB(pool, rendered, folder);
     if (startMB === null) return null;
-    const growthMB = {} as Record<LocalStage, number>;
-    const onProgress = (stage: LocalStage, share: number) => {
-      if (share === 1) growthMB[stage] = (lookAtChild()?.peakMB ?? Number.NaN) - startMB;
+    const growthMB = Object.fromEntries(LOCAL_STAGES.map((stage) => [stage, 0])) as Record<
+      LocalStage,
+      number
+    >;
+    let now: LocalStage = LOCAL_STAGES[0];
+    // A process that keeps too much ends with its task, so it is looked at while it lives.
+    const look = () => {
+      const peakMB = lookAtChild()?.peakMB ?? Number.NaN;
+      if (peakMB - startMB > growthMB[now]) growthMB[now] = peakMB - startMB;
+    };
+    const timer = setInterval(look, LOOK_MS);
+    const onProgress = (stage: LocalStage) => {
+      look();
+      now = stage;
     };
     const source = await localStack(path);
-    await analyseStack({ source, workDir, conditions: CONDITIONS, recipe: {}, onProgress }, pool);
+    try {
+      await analyseStack({ source, workDir, conditions: CONDITIONS, recipe: {}, onProgress }, pool);
+    } finally {
+      clearInterval(timer);
+    }
     return { frames, stackMB: (await stat(path)).size / 2 ** 20, startMB, growthMB };
   } finally {
     await pool.close();

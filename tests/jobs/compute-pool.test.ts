@@ -15,6 +15,7 @@ process.on('message', ({ id, input }) => {
   const asked = input.chunkPaths[0];
   if (asked === 'echo') return done(input);
   if (asked === 'pid') return setTimeout(() => done(process.pid), input.chunkPaths[1] ?? 0);
+  if (asked === 'spent') return process.send({ id, kind: 'done', output: process.pid, spent: true });
   if (asked === 'env') return done(Object.keys(process.env));
   if (asked === 'hang') for (;;) {}
   if (asked === 'crash') process.exit(7);
@@ -97,6 +98,16 @@ test('no more children run at once than the pool allows, and they are kept for t
   const pids = await Promise.all(Array.from({ length: 6 }, () => pidOf(pool, 50)));
   expect(new Set(pids).size).toBe(2);
   expect(pids).toContain(await pidOf(pool));
+});
+
+test('a child that keeps memory which it no longer uses answers, ends, and the next work is done by another', async () => {
+  const pool = makePool(1);
+  const pid = await pidOf(pool);
+  expect(await pool.run('linkTracks', ask('spent'))).toBe(pid);
+  const next = await pidOf(pool);
+  expect(next).not.toBe(pid);
+  await until(() => !alive(pid), Boolean, { withinMs: 2_000 });
+  expect(await pidOf(pool)).toBe(next);
 });
 
 test('work with a known key goes to the child that knows it', async () => {
