@@ -125,8 +125,15 @@ interface Reason {
   final: boolean;
 }
 
+/** What the system says where a disk is full, in this process or in a computing one. */
+const DISK_FULL = /^ENOSPC\b/;
+
 /** A failure in words for people. */
 export function reasonOf(cause: unknown): Reason {
+  if (cause instanceof Error && DISK_FULL.test(cause.message)) {
+    const detail = 'The disk of the data folder is full. Free some room, then run it again.';
+    return { code: 'STORAGE_FULL', detail, final: false };
+  }
   if (cause instanceof ComputeError) {
     return {
       code: cause.code === 'RECIPE' ? 'PARAM_RANGE' : cause.code,
