@@ -51,19 +51,30 @@ export async function handTracks(folder: string, labId: string, analysisId: stri
   const { tracks, trackPoints } = await countLinked(analysisId);
   const unfinished = unfinishedTracksPath(folder, analysisId);
   const writer = await TrackFileWriter.create(unfinished, { tracks, points: trackPoints });
-  const piece: TrackSlice[] = [];
+  try {
+    for await (const piece of piecesOf(streamTracks(labId, analysisId, AS_LINKED))) {
+      await writer.append(packTracks(piece).tracks);
+    }
+    await writer.close();
+  } catch (cause) {
+    await writer.abandon();
+    throw cause;
+  }
+  return keepTracks(folder, analysisId);
+}
+
+async function* piecesOf(tracks: AsyncIterable<TrackSlice>): AsyncGenerator<TrackSlice[]> {
+  let piece: TrackSlice[] = [];
   let points = 0;
-  const put = () => writer.append(packTracks(piece.splice(0)).tracks);
-  for await (const track of streamTracks(labId, analysisId, AS_LINKED)) {
+  for await (const track of tracks) {
     piece.push(track);
     points += track.frame.length;
     if (points < PIECE_POINTS) continue;
-    await put();
+    yield piece;
+    piece = [];
     points = 0;
   }
-  if (piece.length > 0) await put();
-  await writer.close();
-  return keepTracks(folder, analysisId);
+  if (piece.length > 0) yield piece;
 }
 
 async function emptyFolder(folder: string): Promise<void> {

@@ -2,6 +2,7 @@ import { Quantity } from '@/components/ui/quantity';
 import { ScrollBox } from '@/components/ui/scroll-box';
 import { Section } from '@/components/ui/sheet';
 import type { ReportedEvent } from '@/lib/report/events';
+import { LookAgain } from './look-again';
 import { StripPicture } from './strip-picture';
 
 /** Frames of some reconnections, of each run those that stand out most. */
@@ -15,6 +16,7 @@ export function ReportEvents({ events }: { events: readonly ReportedEvent[] }) {
             <ScrollBox label={`Frames of candidate ${one.event} of ${one.runName}`}>
               <StripPicture
                 candidateId={one.id}
+                state={one.strip}
                 words={`Frames around the closest approach of candidate ${one.event} of ${one.runName}, with both tracks, times and a scale bar.`}
               />
             </ScrollBox>
@@ -34,6 +36,7 @@ export function ReportEvents({ events }: { events: readonly ReportedEvent[] }) {
           </figure>
         ))}
       </div>
+      {events.some(({ strip }) => strip === 'composing') ? <LookAgain /> : null}
     </Section>
   );
 }

@@ -61,6 +61,11 @@ export class TrackFileWriter {
     }
   }
 
+  /** Ends the writing of a file that nobody will read. */
+  async abandon(): Promise<void> {
+    await this.file.close().catch(() => undefined);
+  }
+
   private async put(view: ArrayBufferView, at: number): Promise<void> {
     const bytes = bytesOf(view);
     for (let done = 0; done < bytes.length;) {

@@ -6,6 +6,9 @@ interface Estimated {
   uncertainty: number;
 }
 
+/** Whether the picture of its frames is there, being made, or can't be made any more. */
+export type StripState = 'there' | 'composing' | 'none';
+
 /** A reconnection as a report shows it: the strip of its frames and what was measured of it. */
 export interface ReportedEvent {
   id: string;
@@ -18,10 +21,14 @@ export interface ReportedEvent {
   exponentBefore: Estimated | null;
   exponentAfter: Estimated | null;
   qValue: number | null;
+  strip: StripState;
 }
 
 /** A report shows what reconnections look like; all of them are in the data package. */
 export const REPORTED_EVENTS_MOST = 8;
+
+/** An event before anybody has looked for its strip. */
+export type PickedEvent = Omit<ReportedEvent, 'strip'> & { analysisId: string };
 
 interface Shown {
   id: string;
@@ -38,7 +45,7 @@ interface Shown {
 export function reportedEvents(
   shown: readonly Shown[],
   analyses: readonly { id: string; runName: string }[],
-): ReportedEvent[] {
+): PickedEvent[] {
   const placed = analyses.flatMap(({ id, runName }, run) =>
     shown
       .filter(({ analysisId }) => analysisId === id)
@@ -51,14 +58,14 @@ export function reportedEvents(
     .map(({ event }) => event);
 }
 
-function eventOf({ id, event, verdict, facts }: Shown, runName: string): ReportedEvent {
+function eventOf({ id, analysisId, event, verdict, facts }: Shown, runName: string): PickedEvent {
   const { t0S, t0ErrorS, before, after, qValue } = facts;
   const exponent = (side: typeof before) => {
     const { exponent: value = null, exponentError: uncertainty = null } = side ?? {};
     return value === null || uncertainty === null ? null : { value, uncertainty };
   };
   return {
-    ...{ id, runName, event, t0S, t0ErrorS, qValue },
+    ...{ id, analysisId, runName, event, t0S, t0ErrorS, qValue },
     confirmed: verdict === 'yes',
     exponentBefore: exponent(before),
     exponentAfter: exponent(after),

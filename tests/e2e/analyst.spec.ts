@@ -145,8 +145,7 @@ describe('a principal investigator', () => {
       await page.waitForURL(/\/exports\?campaigns=/);
       const zip = await buildPackage(page, 'Package of the investigator');
       expect(holds(zip, 'checksums.sha256')).toBe(true);
-      // The browser tells of strips that were not composed yet when the report first asked for them.
-      expect(visit.complaints.filter((one) => !one.includes('404'))).toEqual([]);
+      expect(visit.complaints).toEqual([]);
     },
     LONG_MS,
   );

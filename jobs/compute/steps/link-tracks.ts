@@ -17,8 +17,13 @@ export async function linkTracks(
     context.onProgress(0.1);
     const { count, points, pieces } = linkSource(source, image, recipe);
     const writer = await TrackFileWriter.create(tracksPath, { tracks: count, points });
-    for (const piece of pieces()) await writer.append(piece);
-    await writer.close();
+    try {
+      for (const piece of pieces()) await writer.append(piece);
+      await writer.close();
+    } catch (cause) {
+      await writer.abandon();
+      throw cause;
+    }
     return { tracks: count, points };
   } finally {
     source.close();

@@ -10,6 +10,7 @@ import { campaignReport } from '@/models/queries/campaign-report';
 import { getCampaign } from '@/models/queries/campaigns';
 import { found } from '../../../found';
 import { pathLevels } from '../../../path-levels';
+import { stripStates } from './strip-states';
 
 interface Props {
   params: Promise<{ campaignId: string }>;
@@ -26,6 +27,8 @@ export default async function CampaignReportPage({ params }: Props) {
   const viewer = await requireViewer('compare', `/campaigns/${campaignId}/report`);
   const campaign = await found(campaignId, (id) => getCampaign(viewer.labId, id));
   const { comparison, runs, analyses, events } = await campaignReport(viewer.labId, campaign.id);
+  const picked = reportedEvents(events, analyses);
+  const strips = await stripStates(viewer.labId, picked);
   return (
     <>
       <PathThread
@@ -42,7 +45,7 @@ export default async function CampaignReportPage({ params }: Props) {
         campaign={campaign}
         comparison={comparison}
         conditions={runs.map(({ id, name, conditions }) => ({ id, name, conditions }))}
-        events={reportedEvents(events, analyses)}
+        events={picked.map((one) => ({ ...one, strip: strips.get(one.id) ?? 'none' }))}
         cautions={reportCautions(comparison, runs, analyses)}
         safety={[...new Set(runs.flatMap(({ safety }) => safety))]}
         origins={analyses.map(
