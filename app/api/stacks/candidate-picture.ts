@@ -50,5 +50,7 @@ export async function stripPicture(labId: string, candidateId: string, sight: Si
     });
   }
   const png = await readStackFile(source.recordingId, file);
-  return new Response(new Uint8Array(png), { headers: { ...HEADERS, 'Content-Type': 'image/png' } });
+  // Corrections of its tracks make another picture at the same address.
+  const headers = { ...HEADERS, 'Cache-Control': 'private, no-cache', 'Content-Type': 'image/png' };
+  return new Response(new Uint8Array(png), { headers });
 }
