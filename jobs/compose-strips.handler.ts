@@ -23,7 +23,7 @@ export const composeStripsHandler: JobHandler<Record<string, never>> = {
       made.push(...missing.map(({ path }) => path));
       return missing;
     });
-    if (objectStore() && !signal.aborted) {
+    if (objectStore()) {
       for (const path of made) {
         await storeFile(recordingId, path, path);
         await rm(path, { force: true });

@@ -29,7 +29,9 @@ export async function drawStrips(
   if (ids.length === 0) return;
   const stackDir = await stackPlace(source.recordingId);
   const { contrast, pixelSizeM, frameIntervalS } = source;
-  for (let i = 0; i < ids.length && !signal.aborted; i += AT_ONCE) {
+  for (let i = 0; i < ids.length; i += AT_ONCE) {
+    // Fewer pictures than were wanted must not pass for all of them.
+    signal.throwIfAborted();
     const strips = await candidatesForStrips(labId, ids.slice(i, i + AT_ONCE));
     await compute(
       'composeStrips',

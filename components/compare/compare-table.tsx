@@ -8,6 +8,9 @@ import type { ComparedRun } from '@/lib/views/compare-view';
 import { LeaveOutDialog } from './leave-out-dialog';
 import { RUN_COLUMNS } from './run-columns';
 
+/** Columns beside the run that a window of 390 px has room for. */
+const NARROW_MOST = 2;
+
 interface CompareTableProps {
   runs: readonly ComparedRun[];
   /** Campaigns in the order of their marks. */
@@ -31,19 +34,26 @@ export function CompareTable({
   bare = false,
 }: CompareTableProps) {
   const [asked, setAsked] = useState<ComparedRun | null>(null);
-  const shown = RUN_COLUMNS.filter(({ key }) => columns.includes(key));
+  const chosen = RUN_COLUMNS.filter(({ key }) => columns.includes(key));
+  const forNarrow = chosen.filter(({ narrow }) => narrow);
+  // Runs alone would say nothing: where none of the columns is made for narrow windows, the first ones stand there.
+  const onNarrow = new Set(forNarrow.length > 0 ? forNarrow : chosen.slice(0, NARROW_MOST));
+  const shown = chosen.map((column) => ({
+    ...column,
+    hide: onNarrow.has(column) ? undefined : ('hide' as const),
+  }));
   return (
     <>
       <Table label="Runs compared">
         <thead>
           <tr>
             <HeadCell sort={sortBy?.('campaign')}>Run</HeadCell>
-            {shown.map(({ key, head, unit, numeric, narrow, sort }) => (
+            {shown.map(({ key, head, unit, numeric, hide, sort }) => (
               <HeadCell
                 key={key}
                 numeric={numeric}
                 unit={unit}
-                narrow={narrow ? undefined : 'hide'}
+                narrow={hide}
                 sort={sort ? sortBy?.(key) : undefined}
               >
                 {head}
@@ -68,8 +78,8 @@ export function CompareTable({
                   </span>
                 </span>
               </Cell>
-              {shown.map(({ key, numeric, narrow, cell }) => (
-                <Cell key={key} numeric={numeric} narrow={narrow ? undefined : 'hide'}>
+              {shown.map(({ key, numeric, hide, cell }) => (
+                <Cell key={key} numeric={numeric} narrow={hide}>
                   {cell(run)}
                 </Cell>
               ))}

@@ -8,7 +8,7 @@ import { stackFolder } from '../stack-folder';
 import { sizeAtHome } from '../stack-store';
 
 /** A package shows what was found; thousands of pictures would only make it heavy. */
-export const STRIPS_MOST = 100;
+const STRIPS_MOST = 100;
 
 /** Candidates of an analysis that go into its package as pictures; none where its frames are no longer stored. */
 export async function planStrips(
