@@ -92,6 +92,7 @@ export async function breakUpload(
   offset: number,
   piece: Uint8Array,
   sent: number,
+  pauseMs = 300,
 ): Promise<void> {
   const url = new URL(location, script.baseUrl);
   const socket = createConnection({ host: url.hostname, port: Number(url.port) });
@@ -112,6 +113,6 @@ export async function breakUpload(
   socket.write(`${head.join('\r\n')}\r\n\r\n`);
   await new Promise<void>((resolve) => socket.write(piece.subarray(0, sent), () => resolve()));
   // The server needs a moment to take what is on the wire before the wire is gone.
-  await new Promise((resolve) => setTimeout(resolve, 300));
+  await new Promise((resolve) => setTimeout(resolve, pauseMs));
   socket.destroy();
 }
