@@ -54,9 +54,11 @@ export function freeFlights(
     const steps = end - 1 - from;
     const vx = (tracks.xPx[end - 1] - tracks.xPx[from]) / steps - driftPx[0];
     const vy = (tracks.yPx[end - 1] - tracks.yPx[from]) / steps - driftPx[1];
-    const block = blockOf(tracks.xPx[end - 1], tracks.yPx[end - 1], image);
-    pathPx[block] += Math.hypot(vx, vy) * frames;
-    if (ends) captures[block]++;
+    const stepPx = Math.hypot(vx, vy);
+    const begin = from + PIECE_POSITIONS_MIN;
+    for (let p = begin; p < begin + frames; p++)
+      pathPx[blockOf(tracks.xPx[p], tracks.yPx[p], image)] += stepPx;
+    if (ends) captures[blockOf(tracks.xPx[end - 1], tracks.yPx[end - 1], image)]++;
   }
   const total = sumOf(captures);
   const path = sumOf(pathPx);
@@ -69,13 +71,16 @@ export function freeFlights(
 
 /**
  * Of a rate of captures, from its scatter between blocks of the image (delta method for a ratio, Cochran 1977), at
- * least that of a Poisson process, widened as Student's t for few blocks with captures.
+ * least that of a Poisson process, widened as Student's t for as many blocks as paths lead through: blocks without
+ * a capture tell as much as others. Path counts in the block where it was flown, not where the track ends: captures
+ * less rate times path have mean 0 in every block then (counting processes: Aalen, Ann. Stat. 6, 701 (1978)).
+ * Counted where tracks end, the blocks downstream would hold the path of all others, and that would pass for chance.
  */
 function relativeErrorOf(captures: Float64Array, path: Float64Array, rate: number): number {
   const count = sumOf(captures);
   if (count === 0) return Number.NaN;
   const scatter = Math.hypot(...captures.map((n, block) => n - rate * path[block])) / count;
-  return widenForFewLines(Math.max(scatter, 1 / Math.sqrt(count)), captures);
+  return widenForFewLines(Math.max(scatter, 1 / Math.sqrt(count)), path);
 }
 
 const sumOf = (values: Float64Array): number => values.reduce((sum, value) => sum + value, 0);
