@@ -1,4 +1,5 @@
 import { execFileSync, spawn, type ChildProcess } from 'node:child_process';
+import { pathToFileURL } from 'node:url';
 import { afterAll, beforeAll, expect, it } from 'vitest';
 import { closeDatabase } from '@/models/database';
 import { cuttingProxy, type CuttingProxy } from '@/scripts/endure/cutting-proxy';
@@ -21,6 +22,23 @@ let web: ChildProcess;
 let script: ApiScript;
 let cookie: string;
 
+function startWeb(port: number, databaseUrl: string, env: Record<string, string> = {}): ChildProcess {
+  const [program, ...args] = nextCommand('start', '-H', '127.0.0.1', '-p', String(port));
+  const { PATH, HOME } = process.env;
+  return spawn(program!, args, {
+    cwd: process.cwd(),
+    stdio: 'ignore',
+    env: {
+      ...{ PATH, HOME, NODE_ENV: 'production', BEADLINE_ROOT: process.cwd() },
+      ...{ DATABASE_URL: databaseUrl, BEADLINE_DATA: server.dataDir },
+      // The same key as the shared server's, so that who has signed in there is known here.
+      NEXTAUTH_SECRET: readSecrets(server.dataDir)!.nextauthSecret,
+      NEXTAUTH_URL: `http://127.0.0.1:${port}`,
+      ...env,
+    },
+  });
+}
+
 beforeAll(async () => {
   const database = new URL(server.databaseUrl);
   way = await cuttingProxy(Number(database.port));
@@ -28,18 +46,7 @@ beforeAll(async () => {
   database.port = String(way.port);
   const port = await freePort();
   origin = `http://127.0.0.1:${port}`;
-  const [program, ...args] = nextCommand('start', '-H', '127.0.0.1', '-p', String(port));
-  const { PATH, HOME } = process.env;
-  web = spawn(program!, args, {
-    cwd: process.cwd(),
-    stdio: 'ignore',
-    env: {
-      ...{ PATH, HOME, NODE_ENV: 'production', BEADLINE_ROOT: process.cwd() },
-      ...{ DATABASE_URL: database.href, BEADLINE_DATA: server.dataDir },
-      // The same key as the shared server's, so that who has signed in there is known here.
-      ...{ NEXTAUTH_SECRET: readSecrets(server.dataDir)!.nextauthSecret, NEXTAUTH_URL: origin },
-    },
-  });
+  web = startWeb(port, database.href);
   const { experimentalist } = (await makeTestLab(server.databaseUrl)).people;
   script = new ApiScript(origin, experimentalist.token);
   cookie = await signedInCookie(server.baseUrl, experimentalist);
@@ -117,4 +124,11 @@ it('F32 without a descriptor left a server is busy for as long as it lasts, and 
   await until(health, ({ status }) => status === 200, { withinMs: 60_000 });
   for (const id of acknowledged) await patiently(() => script.json(`/api/v1/campaigns/${id}`));
   expect((await make('After'))?.status).toBe(201);
+}, 180_000);
+
+it('F32 a server that had no descriptor to load its parts with ends, to be started anew, instead of failing for good', async () => {
+  const hook = pathToFileURL('tests/helpers/unreadable-module.mjs').href;
+  const broken = startWeb(await freePort(), server.databaseUrl, { NODE_OPTIONS: `--import ${hook}` });
+  const code = await new Promise((resolve) => broken.once('exit', resolve));
+  expect(code).toBe(1);
 }, 180_000);
