@@ -29,6 +29,10 @@ export function correctionWords(view: Omit<CorrectionView, 'by'>, of?: Correctio
             : ` in ${frames(view.from ?? 0, view.to)}`;
       return `called track ${track} ${view.population}${where}`;
     }
+    case 'mark-line':
+      return `marked a line through ${view.points?.length ?? 0} points in frame ${frame}`;
+    case 'complete-frame':
+      return `called frame ${frame} complete: all its lines are marked`;
     case 'undo':
       return of
         ? `${of.kind === 'undo' ? 'put back what was taken back by' : 'took back'} correction ${of.revision}`

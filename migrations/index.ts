@@ -12,6 +12,7 @@ import * as addRehearsals from './20261201154000-add-rehearsals';
 import * as rememberWhatAKeyMade from './20261201155000-remember-what-a-key-made';
 import * as addFlowParts from './20261202140000-add-flow-parts';
 import * as addSessions from './20261202130000-add-sessions';
+import * as addMarksOfLines from './20261202150000-add-marks-of-lines';
 import * as addExports from './20261201152000-add-exports';
 import * as mixKnownCandidates from './20261202110000-mix-known-candidates';
 import * as addSelectionsAndExclusions from './20261202120000-add-selections-and-exclusions';
@@ -41,4 +42,5 @@ export const migrations: Migration[] = [
   { name: '20261202120000-add-selections-and-exclusions', ...addSelectionsAndExclusions },
   { name: '20261202130000-add-sessions', ...addSessions },
   { name: '20261202140000-add-flow-parts', ...addFlowParts },
+  { name: '20261202150000-add-marks-of-lines', ...addMarksOfLines },
 ];

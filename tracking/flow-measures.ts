@@ -1,3 +1,4 @@
+import type { MarkedFrame } from './corrections/marked-frames';
 import type { Acceleration } from './details/accelerations';
 import type { ChannelProfiles } from './details/channel-profiles';
 import type { Comparison } from './details/compare-with-expected';
@@ -120,6 +121,8 @@ export interface KnownPopulations {
 export interface MeasureFlowOptions {
   /** Populations of tracks that stand, as of tracks that a correction left alone. */
   known?: KnownPopulations;
+  /** Lines that people marked. */
+  marks?: readonly MarkedFrame[];
   /** Told the share done, 0 to 1, and what is being done. */
   onProgress?: (
     share: number,

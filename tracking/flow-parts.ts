@@ -6,6 +6,7 @@ import { tangleShape } from './details/tangle-shape';
 import { tracersOverTime } from './details/tracers-over-time';
 import { measureDispersion, type Dispersion } from './dispersion/dispersion';
 import type { Estimate } from './estimates/estimate';
+import type { MarkedFrame } from './corrections/marked-frames';
 import { lineDensityEstimates } from './estimates/line-density-estimates';
 import type { FlowDetails, FlowMeasures, ImageSize, PairSummary, TrackMeasures } from './flow-measures';
 import type { ReconnectionCandidate } from './pairs/candidate';
@@ -45,6 +46,8 @@ export interface FlowInput {
   conditions: Conditions;
   recipe: Recipe;
   found: TrackPopulations;
+  /** Lines that people marked. */
+  marks?: readonly MarkedFrame[];
 }
 
 /** One part of what is measured of a recording's tracks. Deterministic: chance comes from `recipe.seed` alone. */
@@ -77,7 +80,7 @@ const MEASURE: { [P in FlowPart]: (pieces: Pieces, input: FlowInput) => FlowPart
 
 function measureEstimates(
   pieces: Pieces,
-  { tracks, image, conditions, recipe, found }: FlowInput,
+  { tracks, image, conditions, recipe, found, marks }: FlowInput,
 ): FlowPartResults['estimates'] {
   const { tracks: all, population } = pieces;
   const { groups, note } = found.summary;
@@ -92,6 +95,7 @@ function measureEstimates(
     conditions,
     recipe,
     captures,
+    marks,
   );
   const [lag] = recipe.lagsFrames;
   const details: FlowDetails = {

@@ -22,7 +22,7 @@ export function measureFlow(
   const progress = options.onProgress ?? (() => undefined);
   progress(0, 'populations');
   const found = judgeTracks(tracks, image, conditions, recipe, options.known);
-  const input: FlowInput = { tracks, image, conditions, recipe, found };
+  const input: FlowInput = { tracks, image, conditions, recipe, found, marks: options.marks };
   const measure = <P extends FlowPart>(part: P, share: number) => {
     progress(share, part);
     return measureFlowPart(part, input);

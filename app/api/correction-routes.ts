@@ -41,6 +41,11 @@ export const CORRECTION_ROUTES = {
     answer: views.carryReportSchema,
     ifMatch: true,
   },
+  'GET /analyses/{analysisId}/marks': {
+    action: 'see-data',
+    summary: 'Lines that people marked and frames that they called complete, as they are now',
+    answer: views.marksSchema,
+  },
   'GET /analyses/{analysisId}/track-points': {
     action: 'see-data',
     summary: 'Some tracks point by point, as they are now',

@@ -4,8 +4,8 @@ import type { StoredCorrection } from '@/components/editor/log/edit-log';
 import type { CorrectionsApi } from '@/components/editor/log/gesture-sender';
 import type { PersonHere } from '@/components/editor/people-here';
 import type { AnalysisView } from '@/lib/views/analysis-view';
-import type { CorrectionList, CorrectionsStored, CorrectionView, PresenceView, RefinedPoint as RefinedView, TrackPointsView } from '@/lib/views/correction-view'; // prettier-ignore
-import type { Correction } from '@/tracking/corrections/correction';
+import type { CorrectionList, CorrectionsStored, CorrectionView, MarksView, PresenceView, RefinedPoint as RefinedView, TrackPointsView } from '@/lib/views/correction-view'; // prettier-ignore
+import type { Correction, Mark } from '@/tracking/corrections/correction';
 import { api, ApiError } from './api-client';
 import { analysisPath } from './use-analysis';
 
@@ -26,6 +26,7 @@ export function correctionOf(view: CorrectionView): Correction {
     sy_px,
     brightness,
     population,
+    points,
     of,
   } = view;
   const fields = {
@@ -41,6 +42,7 @@ export function correctionOf(view: CorrectionView): Correction {
     sy_px,
     brightness,
     population,
+    points,
     of,
   };
   return Object.fromEntries(Object.entries(fields).filter(([, value]) => value !== undefined)) as Correction;
@@ -99,11 +101,25 @@ export function correctionsApi(
         return { revision: page.revision, nextNumber: page.nextTrack, corrections: read(items) };
       }
     },
+    async marks() {
+      const { revision, items } = await api<MarksView>(`${analysisPath(analysisId)}/marks`);
+      return {
+        revision,
+        marks: items.map(({ id, gesture, by, ...mark }) => ({ id, gesture, by, mark: markOf(mark) })),
+      };
+    },
     async closedBy() {
       return signedBy(await api<AnalysisView>(analysisPath(analysisId)));
     },
   };
 }
+
+const markOf = ({
+  kind,
+  frame,
+  points,
+}: Pick<MarksView['items'][number], 'kind' | 'frame' | 'points'>): Mark =>
+  kind === 'mark-line' ? { kind, frame, points: points ?? [] } : { kind, frame };
 
 /** Who has signed an analysis off; null while it is open. */
 export function signedBy({ signedOff }: Pick<AnalysisView, 'signedOff'>): string | null {

@@ -66,6 +66,19 @@ export function classTrack(
   };
 }
 
+/** A vortex line through places in one frame. */
+export function markLine(frame: number, points: readonly Point[]): Act {
+  return {
+    changes: [{ kind: 'mark-line', frame, points: points.map(({ x, y }) => [x, y]) }],
+    words: `mark a line in ${frameText(frame)}`,
+  };
+}
+
+/** Says that all lines that can be seen in a frame are marked. */
+export function completeFrame(frame: number): Act {
+  return { changes: [{ kind: 'complete-frame', frame }], words: `call ${frameText(frame)} complete` };
+}
+
 /** Puts a point: where the track has one of its own already, that one moves. */
 export function putPoint(shown: ShownTrack | null, point: GivenPoint): Act {
   if (!shown) {

@@ -10,6 +10,7 @@ import type { EditCommand } from './edit-keys';
 import { PICK } from './edit-state';
 import type { JoinCandidate } from './join-candidates';
 import { JoinPair } from './join-pair';
+import { MarkLines } from './mark-lines';
 import { trackName } from './log/gesture';
 import { PlacePoint } from './place-point';
 import { Sight } from './sight';
@@ -24,11 +25,13 @@ export class EditController {
   private readonly sight: Sight;
   private readonly pair: JoinPair;
   private readonly placing: PlacePoint;
+  private readonly marking: MarkLines;
 
   constructor(private readonly context: EditContext) {
     this.sight = new Sight(context);
     this.pair = new JoinPair(context);
     this.placing = new PlacePoint(context);
+    this.marking = new MarkLines(context);
   }
 
   /** Where the pointer is, px of the image; null when it has left. */
@@ -39,6 +42,7 @@ export class EditController {
   /** What the magnifier looks at. */
   get focus(): Point | null {
     const { tool } = this.context.session.state.get();
+    if (tool.kind === 'line') return this.hover ?? tool.at;
     return tool.kind === 'place' ? tool.at : this.hover;
   }
 
@@ -62,7 +66,18 @@ export class EditController {
         return this.context.onFind();
       case 'add':
         return this.placing.begin('add', this.cross());
+      case 'mark-line':
+        return this.marking.turn(this.cross());
+      case 'complete-frame':
+        return this.marking.turnComplete();
+      case 'point-back': {
+        const { tool } = session.state.get();
+        if (tool.kind === 'line') this.marking.back(tool);
+        return;
+      }
       case 'nudge':
+        // From here on the cross leads, until the pointer moves again.
+        this.hover = null;
         return this.placing.nudge(command.dxPx, command.dyPx);
       case 'place':
         return this.confirm();
@@ -101,6 +116,7 @@ export class EditController {
       void this.placing.put(tool, place);
       return;
     }
+    if (tool.kind === 'line') return this.marking.put(tool, place, reachPx);
     if (tool.kind === 'join') {
       const second = this.pair.candidateAt(place, reachPx * 1.5) ?? this.trackAt(place, reachPx);
       if (second !== null && second !== tool.first) this.pair.join(tool.first, second);
@@ -187,6 +203,7 @@ export class EditController {
   private confirm(): void {
     const { tool } = this.context.session.state.get();
     if (tool.kind === 'place') void this.placing.put(tool, tool.at);
+    if (tool.kind === 'line') this.marking.put(tool, this.hover ?? tool.at, 0);
     if (tool.kind === 'join' && tool.second !== null) this.pair.join(tool.first, tool.second);
   }
 

@@ -2,6 +2,7 @@
 export type EditCommand =
   | { kind: 'split' | 'join' | 'remove' | 'add' | 'move' | 'undo' | 'redo' | 'mark-segment' }
   | { kind: 'trim-before' | 'trim-after' }
+  | { kind: 'mark-line' | 'complete-frame' | 'point-back' }
   | {
       kind:
         'ghosts' | 'magnifier' | 'brightness' | 'find' | 'next' | 'previous' | 'first-frame' | 'last-frame';
@@ -23,6 +24,8 @@ export const EDIT_KEYS: readonly { keys: string; does: string }[] = [
   { keys: 'T F Y', does: 'class trapped, free, undecided' },
   { keys: 'G', does: 'begin a segment here, for the class' },
   { keys: 'Delete', does: 'remove the track' },
+  { keys: 'K', does: 'mark a vortex line, and end it' },
+  { keys: 'C', does: 'all lines of this frame are marked' },
   { keys: 'U, Ctrl Z', does: 'undo' },
   { keys: 'R, Ctrl Y', does: 'do again' },
   { keys: 'H', does: 'past and future places' },
@@ -34,6 +37,7 @@ export const EDIT_KEYS: readonly { keys: string; does: string }[] = [
 export const PLACE_KEYS: readonly { keys: string; does: string }[] = [
   { keys: '← ↑ → ↓', does: 'move by 1 px, with Shift by 0.1 px' },
   { keys: 'Enter', does: 'there' },
+  { keys: 'Backspace', does: 'of a line: one point back' },
   { keys: 'Esc', does: 'leave it' },
 ];
 
@@ -56,8 +60,9 @@ const FINE_PX = 0.1;
 /**
  * The editor's command for a key press; null for keys that belong to the viewer or the browser.
  * @param placing while a place in the picture is looked for: arrows then move it.
+ * @param drawing while that is the next point of a line.
  */
-export function editCommandOf(press: KeyPress, placing: boolean): EditCommand | null {
+export function editCommandOf(press: KeyPress, placing: boolean, drawing = false): EditCommand | null {
   const { key, shiftKey } = press;
   if (press.altKey) return null;
   if (press.ctrlKey || press.metaKey) {
@@ -71,6 +76,7 @@ export function editCommandOf(press: KeyPress, placing: boolean): EditCommand | 
     if (arrow) return { kind: 'nudge', dxPx: arrow[0] * step, dyPx: arrow[1] * step };
     if (key === 'Enter') return { kind: 'place' };
   }
+  if (drawing && (key === 'Backspace' || key === 'Delete')) return { kind: 'point-back' };
   if (key === 'Escape') return { kind: 'cancel' };
   return plainKey(key);
 }
@@ -105,6 +111,10 @@ function plainKey(key: string): EditCommand | null {
       return { kind: 'class', population: 'free' };
     case 'y':
       return { kind: 'class', population: 'undecided' };
+    case 'k':
+      return { kind: 'mark-line' };
+    case 'c':
+      return { kind: 'complete-frame' };
     case 'g':
       return { kind: 'mark-segment' };
     case 'Delete':

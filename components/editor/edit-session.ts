@@ -2,15 +2,17 @@ import type { TrackBlock } from '@/components/canvas/track-block';
 import type { TrackBlocks } from '@/components/canvas/track-blocks';
 import type { ViewerStore } from '@/components/canvas/viewer-store';
 import { rebuildBlock } from './block-tracks';
+import { ApiError } from '@/components/data/api-client';
 import type { Act } from './edit-actions';
 import { EditStore, initialEditState } from './edit-state';
 import { EditLog, type StoredCorrection } from './log/edit-log';
 import type { Gesture } from './log/gesture';
 import { GestureSender, type CorrectionsApi, type LogAnswer } from './log/gesture-sender';
 import { orphans, type GestureStore } from './log/kept-gestures';
+import { LocalMarks } from './log/local-marks';
 import { LocalTracks, type ShownTrack } from './log/local-tracks';
 import { filterTest, isEveryTrack } from './track-filter';
-import { CorrectionRefusal } from '@/tracking/corrections/correction';
+import { CorrectionRefusal, isMark } from '@/tracking/corrections/correction';
 
 /** Gestures that are laid over the blocks before these are fetched anew. */
 const STEPS_MAX = 200;
@@ -38,6 +40,9 @@ export class EditSession {
   /** Blocks of tracks around the frame shown; null until the page is there. */
   blocks: TrackBlocks | null = null;
   readonly tracks: LocalTracks;
+  readonly marks = new LocalMarks();
+  /** The marks of the server could not be fetched when they should have been. */
+  marksBehind = false;
   readonly log: EditLog;
   private readonly sender: GestureSender;
   private readonly corrected = new Set<number>();
@@ -49,7 +54,8 @@ export class EditSession {
     const { initial, userId, analysisId, tab, newId, extent } = options;
     this.state = new EditStore(initialEditState(initial.revision, options.closed));
     this.tracks = new LocalTracks(() => this.blocks?.kept() ?? [], extent);
-    this.log = new EditLog({ analysisId, userId, tab, tracks: this.tracks, newId, now: () => new Date() });
+    const { tracks, marks } = this;
+    this.log = new EditLog({ analysisId, userId, tab, tracks, marks, newId, now: () => new Date() });
     this.log.revision = initial.revision;
     this.log.nextNumber = initial.nextNumber;
     this.log.remember(initial.corrections);
@@ -135,6 +141,31 @@ export class EditSession {
       if (!(refusal instanceof CorrectionRefusal)) throw refusal;
       this.state.say(refusal.message, 'refusal');
       return null;
+    }
+  }
+
+  /** Takes back a mark, whoever made it and whenever. */
+  takeBack({ key, stored }: { key: string; stored: { id: string } | null }, what: string): void {
+    if (this.locked !== null) {
+      this.state.say(this.locked, 'refusal');
+      return;
+    }
+    const words = `take back: ${what}`;
+    this.keep(this.log.takeBack(key, stored?.id ?? null, words, this.options.viewer.get().frame));
+    this.refresh();
+    this.state.say(`Taken back: ${what}.`);
+  }
+
+  /** Fetches the marks of the server, where those here are older. */
+  async renewMarks(): Promise<void> {
+    try {
+      this.marks.renew(await this.options.api.marks());
+      this.marksBehind = false;
+      this.refresh();
+    } catch (error) {
+      if (!(error instanceof ApiError)) throw error;
+      // What is here stays until the link is back.
+      this.marksBehind = true;
     }
   }
 
@@ -245,12 +276,19 @@ export class EditSession {
     // What someone else did, and what was taken back of an earlier visit, only the server can show.
     if (foreign.length > 0 || unseen) this.blocks?.renew();
     if (foreign.length > 0) this.state.set({ news: newsOf(foreign) });
+    // An undo may be of a mark.
+    if (
+      this.marks.old ||
+      foreign.some(({ correction }) => correction.kind === 'undo' || isMark(correction))
+    ) {
+      void this.renewMarks();
+    }
     this.refresh();
   }
 
   private noteCorrected(corrections: readonly StoredCorrection[]): void {
     for (const { correction, made } of corrections) {
-      if (correction.kind !== 'undo' && correction.track !== null) this.corrected.add(correction.track);
+      if ('track' in correction && correction.track !== null) this.corrected.add(correction.track);
       if (made !== null) this.corrected.add(made);
     }
   }

@@ -19,6 +19,8 @@ export type Tool =
   | { kind: 'pick' }
   /** `second`: the track that Enter would join. */
   | { kind: 'join'; first: number; second: number | null }
+  /** Points of the line that is being drawn in a frame, and where the cross is. */
+  | { kind: 'line'; frame: number; points: readonly Point[]; at: Point }
   | {
       kind: 'place';
       purpose: 'add' | 'move';

@@ -2,9 +2,10 @@
 
 import Link from 'next/link';
 import { useEffect, useRef, useState, type KeyboardEvent } from 'react';
-import type { NearLayer, OverlayScene } from '@/components/canvas/frame-well';
+import type { NearLayer, NearScene, OverlayScene } from '@/components/canvas/frame-well';
 import { drawTracks } from '@/components/canvas/draw-tracks';
 import { TRAIL_FRAMES } from '@/components/canvas/track-blocks';
+import type { Point } from '@/components/canvas/view-box';
 import { tagChosen } from '@/components/canvas/track-overlay';
 import { useViewer, useViewerStore } from '@/components/canvas/use-viewer';
 import type { ViewedRecording } from '@/components/canvas/viewer-panel';
@@ -18,7 +19,10 @@ import { StateWord } from '@/components/ui/state-bead';
 import { StrokeLegend } from '@/components/ui/strokes';
 import { BlocksNote } from './blocks-note';
 import { ChosenFacts, FindTrack } from './chosen-facts';
+import { drawBegunLine, drawMarks } from './draw-marks';
 import { measureDrawing } from './draw-times';
+import type { Tool } from './edit-state';
+import { MarkedLines } from './marked-lines';
 import { drawCandidateTracks, drawGhosts, drawMagnifier, drawPlace } from './draw-edit';
 import { EDIT_KEYS, editCommandOf, PLACE_KEYS } from './edit-keys';
 import { FilterFields } from './filter-fields';
@@ -63,13 +67,14 @@ export function EditorSheet(props: EditorSheetProps) {
   const image = { width: recording.width, height: recording.height };
 
   const onKey = (event: KeyboardEvent): boolean => {
-    const placing = session.state.get().tool.kind === 'place';
-    const joining = session.state.get().tool.kind === 'join';
+    const { kind: tool } = session.state.get().tool;
+    const joining = tool === 'join';
     if (joining && event.key === 'Enter') {
       controller.run({ kind: 'place' });
       return true;
     }
-    const command = editCommandOf(event, placing);
+    const drawing = tool === 'line';
+    const command = editCommandOf(event, tool === 'place' || drawing, drawing);
     if (!command) return false;
     controller.run(command);
     return true;
@@ -90,6 +95,7 @@ export function EditorSheet(props: EditorSheetProps) {
       const all = session.block(frame, false);
       if (all) drawCandidateTracks(scene, all, controller.candidates(), tool.second);
     }
+    drawMarks(scene, session.marks.lines(frame));
     if (chosen !== null) tagChosen(scene, block, chosen, frame);
     measureDrawing(began, { frame, tracks: block.count, chosen, version: session.state.get().version });
   };
@@ -102,6 +108,7 @@ export function EditorSheet(props: EditorSheetProps) {
       const { tool, magnifier: on } = session.state.get();
       const place = tool.kind === 'place' ? tool.at : null;
       if (place) drawPlace(scene, place, null);
+      if (tool.kind === 'line') drawLineTool(scene, tool, controller.focus ?? tool.at);
       const { focus } = controller;
       if (on && focus) drawMagnifier(scene, image, focus, session.block(scene.state.shown));
     },
@@ -129,6 +136,7 @@ export function EditorSheet(props: EditorSheetProps) {
         ) : null}
         <ToolLine
           state={session.state}
+          marks={session.marks}
           viewer={viewer}
           readOnly={locked}
           onCommand={(command) => controller.run(command)}
@@ -149,7 +157,8 @@ export function EditorSheet(props: EditorSheetProps) {
               grab: (place, reachPx) => controller.grab(place, reachPx),
               hover: (place) => {
                 controller.point(place);
-                if (session.state.get().magnifier) redrawNear.current?.();
+                const { magnifier: near, tool } = session.state.get();
+                if (near || tool.kind === 'line') redrawNear.current?.();
               },
             },
           }}
@@ -208,6 +217,14 @@ export function EditorSheet(props: EditorSheetProps) {
         <Section title="Chosen track">
           <ChosenFacts analysisId={props.analysisId} session={session} viewer={viewer} />
         </Section>
+        <Section title="Marked lines">
+          <MarkedLines
+            session={session}
+            viewer={viewer}
+            locked={locked}
+            onCommand={(command) => controller.run(command)}
+          />
+        </Section>
         <Section title="Tracks in this frame">
           <FindTrack onFind={editor.find} />
           <FilterFields state={session.state} />
@@ -221,4 +238,10 @@ export function EditorSheet(props: EditorSheetProps) {
       </div>
     </div>
   );
+}
+
+/** The line that is being drawn, to where the pointer is, with a cross there. */
+function drawLineTool(scene: NearScene, tool: Extract<Tool, { kind: 'line' }>, at: Point): void {
+  if (tool.points.length > 0 && tool.frame === scene.state.shown) drawBegunLine(scene, tool.points, at);
+  drawPlace(scene, at, null);
 }

@@ -60,13 +60,13 @@ export class PlacePoint {
   nudge(dxPx: number, dyPx: number): void {
     const { state } = this.context.session;
     const { tool } = state.get();
-    if (tool.kind !== 'place' || tool.busy) return;
+    if (tool.kind !== 'line' && (tool.kind !== 'place' || tool.busy)) return;
     const { width, height } = this.context.image;
     const at = {
       x: Math.min(width - 0.51, Math.max(-0.5, tool.at.x + dxPx)),
       y: Math.min(height - 0.51, Math.max(-0.5, tool.at.y + dyPx)),
     };
-    state.set({ tool: { ...tool, at, byEye: false } });
+    state.set({ tool: tool.kind === 'line' ? { ...tool, at } : { ...tool, at, byEye: false } });
     state.say(`x ${at.x.toFixed(1)}, y ${at.y.toFixed(1)} px`);
   }
 

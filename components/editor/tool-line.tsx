@@ -5,10 +5,12 @@ import type { ViewerStore } from '@/components/canvas/viewer-store';
 import { Button } from '@/components/ui/button';
 import type { EditCommand } from './edit-keys';
 import type { EditStore } from './edit-state';
+import type { LocalMarks } from './log/local-marks';
 import { useEdit } from './use-edit';
 
 interface ToolLineProps {
   state: EditStore;
+  marks: LocalMarks;
   viewer: ViewerStore;
   /** Nothing can be changed: only what looks is shown. */
   readOnly: boolean;
@@ -26,13 +28,16 @@ interface Word {
   off?: boolean;
 }
 
-/** Everything that can be done to a track, in words with their keys. */
-export function ToolLine({ state, viewer, readOnly, onCommand }: ToolLineProps) {
+/** Everything that can be done to tracks and lines, in words with their keys. */
+export function ToolLine({ state, marks, viewer, readOnly, onCommand }: ToolLineProps) {
   const tool = useEdit(state, (s) => s.tool);
   const segment = useEdit(state, (s) => s.segmentFrom);
   const undo = useEdit(state, (s) => s.undoWords);
   const redo = useEdit(state, (s) => s.redoWords);
   const chosen = useViewer(viewer, (s) => s.chosenTrack !== null);
+  const frame = useViewer(viewer, (s) => s.frame);
+  useEdit(state, (s) => s.version);
+  const complete = marks.completeBy(frame) !== null;
   const placing = tool.kind === 'place' ? tool.purpose : null;
   const groups: Word[][] = [
     [
@@ -75,6 +80,22 @@ export function ToolLine({ state, viewer, readOnly, onCommand }: ToolLineProps) 
       { label: 'Trapped', cap: 'T', command: { kind: 'class', population: 'trapped' }, needsTrack: true },
       { label: 'Free', cap: 'F', command: { kind: 'class', population: 'free' }, needsTrack: true },
       { label: 'Undecided', cap: 'Y', command: { kind: 'class', population: 'undecided' }, needsTrack: true },
+    ],
+    [
+      {
+        label: tool.kind === 'line' ? 'End line' : 'Mark line',
+        cap: 'K',
+        command: { kind: 'mark-line' },
+        says: tool.kind === 'line' ? 'End the line' : 'Mark a vortex line',
+        pressed: tool.kind === 'line',
+      },
+      {
+        label: 'Frame complete',
+        cap: 'C',
+        command: { kind: 'complete-frame' },
+        says: 'All lines of this frame are marked',
+        pressed: complete,
+      },
     ],
     [
       {

@@ -73,6 +73,7 @@ export function useEditSession(setup: Setup): Editor {
   useEffect(() => {
     showTab(tab);
     void session.resume();
+    void session.renewMarks();
     return () => session.close();
   }, [session, tab]);
 
@@ -87,6 +88,7 @@ export function useEditSession(setup: Setup): Editor {
         if (analysis.correctionsRevision > session.log.revision) await session.catchUp();
         setPeople(await here);
         if (lost) session.blocks?.renew();
+        if (lost || session.marksBehind) void session.renewMarks();
         lost = false;
         void session.kick();
       } catch (error) {

@@ -6,6 +6,7 @@ import type { StackPlace } from '@/stacks/stack-place';
 import type { RehearsalFound } from '@/tracking/rehearsal/assess-rehearsal';
 import type { RehearsalAssessment } from '@/tracking/rehearsal/assessment';
 import type { RehearsalPlan } from '@/tracking/rehearsal/plan';
+import type { MarkedFrame } from '@/tracking/corrections/marked-frames';
 import type { FlowMeasures, ImageSize, KnownPopulations } from '@/tracking/flow-measures';
 import type { FlowInput, FlowPart, FlowPartResults } from '@/tracking/flow-parts';
 import type { PlacedSpot } from '@/tracking/detect';
@@ -84,6 +85,8 @@ export interface MeasureFlowInput {
   recipe: Recipe;
   /** Populations of tracks that stand. */
   known?: KnownPopulations;
+  /** Lines that people marked. */
+  marks?: readonly MarkedFrame[];
 }
 
 /** One part of the flow measures, once the tracks are named. */

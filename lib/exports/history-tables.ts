@@ -12,7 +12,10 @@ export const CORRECTIONS: TableDefinition = {
   key: ['revision'],
   columns: [
     whole('revision', 'Revision of the tracks that the correction made.'),
-    text('kind', 'split, join, trim, remove, add-point, move-point, reclass or undo.'),
+    text(
+      'kind',
+      'split, join, trim, remove, add-point, move-point, reclass, mark-line, complete-frame or undo.',
+    ),
     text('detail', 'What was changed, as JSON.'),
     text('by', 'Who corrected.'),
     text('at', 'When (UTC).'),

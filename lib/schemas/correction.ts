@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { CORRECTION_KINDS, type Correction } from '@/tracking/corrections/correction';
+import { MARK_POINTS_MOST } from '@/tracking/corrections/marked-frames';
 
 /** Corrections that one request may append: a gesture or a person's queue after a lost connection. */
 export const CORRECTIONS_MOST = 500;
@@ -29,6 +30,12 @@ const point = {
   brightness: z.number('brightness must be a number of photoelectrons.').min(0).max(1e9).optional(),
 };
 
+const linePoint = z.tuple([place('x_px'), place('y_px')], 'Every point must be [x_px, y_px].');
+const linePoints = z
+  .array(linePoint, 'points must be a list of [x_px, y_px].')
+  .min(2, 'A marked line needs at least 2 points.')
+  .max(MARK_POINTS_MOST, `At most ${MARK_POINTS_MOST} points in a marked line.`);
+
 /** Corrections sent together under one gesture are taken back together. */
 const gesture = z.uuid('gesture must be a UUID.').nullish();
 
@@ -50,6 +57,8 @@ export const correctionSchema = z.discriminatedUnion(
       to: frame('to').optional(),
       gesture,
     }),
+    z.strictObject({ kind: z.literal('mark-line'), frame: frame('frame'), points: linePoints, gesture }),
+    z.strictObject({ kind: z.literal('complete-frame'), frame: frame('frame'), gesture }),
     z.strictObject({ kind: z.literal('undo'), of: z.uuid('of must be the id of a correction.'), gesture }),
   ],
   { error: () => `kind must be one of ${CORRECTION_KINDS.join(', ')}.` },

@@ -21,6 +21,8 @@ export const correctionViewSchema = z.object({
   sy_px: optional(z.number()),
   brightness: optional(z.number()),
   population: optional(z.enum(['trapped', 'free', 'undecided'])),
+  /** Of a marked line: [x_px, y_px] of each. */
+  points: optional(z.array(z.tuple([z.number(), z.number()]))),
   of: optional(z.uuid()),
   /** The correction of another analysis that was carried here. */
   carriedFrom: optional(z.uuid()),
@@ -45,6 +47,24 @@ export type CorrectionsStored = z.infer<typeof correctionsStoredSchema>;
 /** A page of the log, with the revision it belongs to. */
 export const correctionListSchema = correctionsStoredSchema.extend({ nextCursor: z.string().nullable() });
 export type CorrectionList = z.infer<typeof correctionListSchema>;
+
+/** Lines that people marked, and frames that they called complete: marks that are in force. */
+export const marksSchema = z.object({
+  revision: count,
+  items: z.array(
+    z.object({
+      /** Of the correction, to take it back. */
+      id: z.uuid(),
+      gesture: z.uuid().nullable(),
+      kind: z.enum(['mark-line', 'complete-frame']),
+      frame: count,
+      points: optional(z.array(z.tuple([z.number(), z.number()]))),
+      by: personSchema.nullable(),
+      createdAt: z.iso.datetime(),
+    }),
+  ),
+});
+export type MarksView = z.infer<typeof marksSchema>;
 
 /** What a tracer's position is, as the detector's fit finds it near a place. */
 export const refinedPointSchema = z.object({

@@ -1,14 +1,16 @@
 import type { Transaction } from 'sequelize';
 import type { AnalysisSummary } from '@/lib/analysis-facts';
-import type { FlowMeasures } from '@/tracking/flow-measures';
+import type { Estimate } from '@/tracking/estimates/estimate';
+import type { FlowDetails, FlowMeasures } from '@/tracking/flow-measures';
 import type { Conditions, Recipe } from '@/tracking/types';
 import { keepRawResults, saveMeasuresOf } from './analysis-outcome';
 import { replaceCandidates } from './replace-candidates';
 import { execute, selectRow, selectRows } from './select';
 
 export interface Remeasurable {
-  /** Revision of the tracks now. */
+  /** Revision of the tracks now, and of those that the newest results are of. */
   revision: number;
+  measuredRevision: number;
   frames: number;
   width: number;
   height: number;
@@ -19,7 +21,8 @@ export interface Remeasurable {
 /** @returns null where there is nothing to measure again: the analysis is gone, signed off, or its results fit. */
 export async function remeasurable(labId: string, analysisId: string): Promise<Remeasurable | null> {
   const row = await selectRow<Omit<Remeasurable, 'changed'>>(
-    `SELECT a.tracks_revision AS revision, a.frames, g.width, g.height
+    `SELECT a.tracks_revision AS revision, a.frames,
+       (SELECT max(m.tracks_revision) FROM analysis_measures m WHERE m.analysis_id = a.id) AS "measuredRevision", g.width, g.height
      FROM analyses a JOIN recordings g ON g.id = a.recording_id
      WHERE a.lab_id = $1 AND a.id = $2 AND a.state = 'done' AND a.stale_since IS NOT NULL
        AND a.signed_off_at IS NULL`,
@@ -47,6 +50,15 @@ export interface Remeasured {
   revision: number;
   measures: FlowMeasures;
   tracks: readonly MeasuredTrack[];
+}
+
+/** Results of the tracks of `measuredRevision` that become those of `revision`. */
+export interface WithMarks {
+  analysisId: string;
+  revision: number;
+  measuredRevision: number;
+  estimates: Estimate[];
+  details: FlowDetails;
 }
 
 /**
@@ -91,6 +103,34 @@ export async function saveRemeasured(
     `UPDATE analyses SET summary = $3, stale_since = CASE WHEN tracks_revision = $2 THEN NULL ELSE stale_since END,
        revision = revision + 1, updated_at = now() WHERE id = $1`,
     [analysisId, revision, JSON.stringify(summary)],
+    transaction,
+  );
+}
+
+/**
+ * Stores estimates of tracks on which lines were marked since their other results, which stand.
+ */
+export async function saveWithMarks(
+  { analysisId, revision, measuredRevision, estimates, details }: WithMarks,
+  transaction: Transaction,
+): Promise<void> {
+  await keepRawResults(analysisId, transaction);
+  await execute(
+    `INSERT INTO analysis_measures (analysis_id, tracks_revision, populations, pdfs, estimates, motion, details)
+     SELECT analysis_id, $2, populations, pdfs, $4, motion, $5 FROM analysis_measures
+     WHERE analysis_id = $1 AND tracks_revision = $3`,
+    [analysisId, revision, measuredRevision, JSON.stringify(estimates), JSON.stringify(details)],
+    transaction,
+  );
+  await execute(
+    'DELETE FROM analysis_measures WHERE analysis_id = $1 AND tracks_revision > 0 AND tracks_revision <> $2',
+    [analysisId, revision],
+    transaction,
+  );
+  await execute(
+    `UPDATE analyses SET stale_since = CASE WHEN tracks_revision = $2 THEN NULL ELSE stale_since END,
+       revision = revision + 1, updated_at = now() WHERE id = $1`,
+    [analysisId, revision],
     transaction,
   );
 }

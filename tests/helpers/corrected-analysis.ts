@@ -5,8 +5,10 @@ import { finishAnalysis, saveMeasures } from '@/models/queries/analysis-outcome'
 import { writeTrackMeasures, writeTracks } from '@/models/queries/write-tracks';
 import type { JobContext } from '@/jobs/job-context';
 import { remeasureTracksHandler } from '@/jobs/remeasure-tracks.handler';
-import { measureFlow } from '@/tracking/measure-flow';
+import { measureFlowPart, type FlowInput, type FlowPart } from '@/tracking/flow-parts';
+import { judgeTracks, measureFlow } from '@/tracking/measure-flow';
 import { RECIPE_DEFAULTS } from '@/tracking/recipe';
+import type { Scene } from '@/tracking/simulate/scene';
 import { tangleScene } from '@/tracking/simulate/tangle-scene';
 import { trueTracks } from '@/tracking/simulate/true-tracks';
 import type { Recipe, Tracks } from '@/tracking/types';
@@ -30,9 +32,9 @@ export const RECIPE: Recipe = {
   closestApproach_m: 4e-5,
 };
 
-/** Tracks of a small tangle with meetings, as linking would give them. */
-export function tangleTracks(): Tracks {
-  const scene = tangleScene({
+/** A small tangle with meetings. */
+export const smallTangle = (): Scene =>
+  tangleScene({
     widthPx: IMAGE.width,
     heightPx: IMAGE.height,
     frames: IMAGE.frames,
@@ -47,7 +49,10 @@ export function tangleTracks(): Tracks {
     events: 3,
     seed: 2,
   });
-  return trueTracks(scene, { sigmaPx: 0.12, seed: 1, shortestTrackFrames: 3 }).tracks;
+
+/** Its tracks, as linking would give them. */
+export function tangleTracks(): Tracks {
+  return trueTracks(smallTangle(), { sigmaPx: 0.12, seed: 1, shortestTrackFrames: 3 }).tracks;
 }
 
 /** A finished analysis of such tracks, written straight into the database. */
@@ -91,18 +96,25 @@ export async function addDoneAnalysis(lab: TestLab, recordingId: string, tracks:
   return { analysisId: analysis.id, path: `/api/v1/analyses/${analysis.id}`, tracks, measures };
 }
 
-/** Does the work of measuring corrected tracks at once, in this process. */
-export async function remeasureNow(labId: string, analysisId: string): Promise<void> {
+/** Does the work of measuring corrected tracks at once, in this process. @returns the tasks that it computed */
+export async function remeasureNow(labId: string, analysisId: string): Promise<string[]> {
+  const tasks: string[] = [];
   const context = {
     claim: { labId, subjectId: analysisId },
     payload: {},
     report: () => undefined,
-    compute: async (_task: string, input: MeasureInput) =>
-      measureFlow(input.tracks, input.image, input.conditions, input.recipe, { known: input.known }),
+    compute: async (task: string, input: MeasureInput & FlowInput & { part: FlowPart }) => {
+      tasks.push(task);
+      const { tracks, image, conditions, recipe, known, marks } = input;
+      if (task === 'judgeTracks') return judgeTracks(tracks, image, conditions, recipe, known);
+      if (task === 'measureFlowPart') return measureFlowPart(input.part, input);
+      return measureFlow(tracks, image, conditions, recipe, { known, marks });
+    },
     commit: (write: (transaction: never) => Promise<void>) =>
       getSequelize().transaction((transaction) => write(transaction as never)),
   };
   await remeasureTracksHandler.run(context as unknown as JobContext<Record<string, never>>);
+  return tasks;
 }
 
 interface MeasureInput {

@@ -1,5 +1,6 @@
 import { POINT_ADDED, POINT_MOVED, POPULATIONS } from '../types';
 import { CorrectionRefusal, type Correction, type GivenPoint } from './correction';
+import { assertMark } from './marked-frames';
 import { bridge, bridgeAround, copyPoints, cut, emptyTrack, firstFrame, isMeasured, lastFrame, NOT_GIVEN, type EditedTrack } from './edited-track'; // prettier-ignore
 
 /**
@@ -50,6 +51,10 @@ export function applyOne(store: TrackStore, change: Change, fresh: number, exten
       return movePoint(store, change, extent);
     case 'reclass':
       return reclass(store, change);
+    case 'mark-line':
+    case 'complete-frame':
+      assertMark(change, extent);
+      return 'marks';
   }
 }
 

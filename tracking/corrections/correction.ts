@@ -12,8 +12,20 @@ export interface GivenPoint {
   brightness?: number;
 }
 
+/** A place in the image, px: x, then y. */
+export type PlacePx = [xPx: number, yPx: number];
+
 /**
- * One change of the tracks. Frames count from 0; positions are px, as in `Tracks`.
+ * Marks of lines, which leave the tracks as they are.
+ *
+ * - `mark-line`: a person drew a vortex line along the tracers on it, as it is in one frame, through `points`.
+ * - `complete-frame`: a person looked the frame through, and all lines that can be seen in it are marked.
+ */
+export type Mark =
+  { kind: 'mark-line'; frame: number; points: PlacePx[] } | { kind: 'complete-frame'; frame: number };
+
+/**
+ * One change of the tracks, or a mark beside them. Frames count from 0; positions are px, as in `Tracks`.
  *
  * - `split`: frames before `frame` stay the track, those from `frame` on become a new one.
  * - `join`: both become one track with the number of the one that begins first.
@@ -31,6 +43,7 @@ export type Correction =
   | ({ kind: 'add-point'; track: number | null } & GivenPoint)
   | ({ kind: 'move-point'; track: number } & GivenPoint)
   | { kind: 'reclass'; track: number; population: Population; from?: number; to?: number }
+  | Mark
   | { kind: 'undo'; of: string };
 
 export type CorrectionKind = Correction['kind'];
@@ -43,11 +56,17 @@ export const CORRECTION_KINDS = [
   'add-point',
   'move-point',
   'reclass',
+  'mark-line',
+  'complete-frame',
   'undo',
 ] as const satisfies readonly CorrectionKind[];
 
 /** A correction with its place in a log: corrections of one gesture are taken back together. */
 export type LoggedCorrection = Correction & { id: string; gesture?: string | null };
+
+/** Whether a correction is a mark of lines: no track is another one after it. */
+export const isMark = <T extends { kind: string }>(correction: T): correction is Extract<T, Mark> =>
+  correction.kind === 'mark-line' || correction.kind === 'complete-frame';
 
 /** Whether a correction makes a track, and so takes the next free number. */
 export const makesTrack = (correction: Correction): boolean =>

@@ -1,6 +1,6 @@
 import { POPULATIONS } from '../types';
 import { HAND_ERROR_PX } from './apply-one';
-import type { Correction, GivenPoint } from './correction';
+import { isMark, type Correction, type GivenPoint } from './correction';
 import { cut, firstFrame, isMeasured, lastFrame, NOT_GIVEN, type EditedTrack } from './edited-track';
 import {
   apartPx,
@@ -41,6 +41,8 @@ export function meantHere(
   source: (number: number) => EditedTrack | null,
   here: PlacedTracks,
 ): Meaning {
+  // Places in a frame are the same whatever the tracks are.
+  if (isMark(correction)) return { changes: [correction] };
   if (correction.kind === 'add-point' && correction.track === null) return began(correction, here);
   const track = source(correction.track!);
   if (!track) return nowhere(correction.track);

@@ -3,7 +3,12 @@ import { randomEffectsMean } from './random-effects';
 import type { EstimateMethod } from './estimate';
 
 /** Methods that share tracers and thickness err together and count as one. */
-const TOGETHER: readonly EstimateMethod[] = ['crossings', 'neighbour-distance', 'beads-per-length'];
+const TOGETHER: readonly EstimateMethod[] = [
+  'crossings',
+  'neighbour-distance',
+  'beads-per-length',
+  'marked-chains',
+];
 /** The prior is an expectation, not a measurement. */
 const LEFT_OUT: readonly EstimateMethod[] = ['heat-flux-prior', 'combined'];
 /** Results that agree are further apart than theirs in less than this share of cases. */

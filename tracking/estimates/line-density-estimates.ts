@@ -1,5 +1,6 @@
 import type { StateChange } from '../populations/changes-of-state';
 import type { Pieces } from '../populations/pieces';
+import type { MarkedFrame } from '../corrections/marked-frames';
 import type { Conditions, Recipe, Tracks } from '../types';
 import { beadsPerLength } from './beads-per-length';
 import { darkLines, lineDirections } from './cautions';
@@ -14,6 +15,7 @@ import { heatFluxPrior } from './heat-flux-prior';
 import { asEstimates, notUsable, type DensityResult } from './interval';
 import { lineGroups } from './line-groups';
 import { lineVelocityEstimate } from './line-velocity';
+import { markedChainsEstimate } from './marked-chains';
 import { nearestLines } from './nearest-lines';
 import { neighbourDistanceEstimate } from './neighbour-distance';
 import { trappedPool } from './trapped-pool';
@@ -29,10 +31,12 @@ const BY_TRACERS: readonly [EstimateMethod, (context: EstimateContext) => Densit
 ];
 
 /** Methods whose formulas take isotropic lines for granted, and count those that carry a tracer. */
-const BY_ISOTROPY: readonly EstimateMethod[] = ['crossings', 'neighbour-distance', 'beads-per-length'];
-
-const NO_MARKS =
-  'It needs lines drawn along the tracers of one vortex line by a person, and nothing draws them yet; tracers that are joined by their motion give the visible line length, a lower limit.';
+const BY_ISOTROPY: readonly EstimateMethod[] = [
+  'crossings',
+  'neighbour-distance',
+  'beads-per-length',
+  'marked-chains',
+];
 
 export interface LineDensityEstimates {
   /** Line density and line spacing by every method and combined. */
@@ -49,6 +53,7 @@ export interface LineDensityEstimates {
  *
  * @param populationNote why tracks have the names they have.
  * @param captures pieces of tracks and where they change their state; null where the populations were not told apart.
+ * @param marks lines that people marked.
  */
 export function lineDensityEstimates(
   tracks: Tracks,
@@ -58,6 +63,7 @@ export function lineDensityEstimates(
   conditions: Conditions,
   recipe: Recipe,
   captures: { pieces: Pieces; changes: readonly StateChange[] } | null = null,
+  marks: readonly MarkedFrame[] = [],
 ): LineDensityEstimates {
   const pool = trappedPool(tracks, population, image, conditions);
   const groups = lineGroups(tracks, pool, image);
@@ -70,7 +76,9 @@ export function lineDensityEstimates(
   });
   const flights = captures && freeFlights(captures.pieces, captures.changes, conditions, pool.driftPx, image);
   results.push(freePathEstimate(flights, conditions));
-  results.push(notUsable('marked-chains', NO_MARKS));
+  const { spotSizePx } = recipe;
+  const marked = markedChainsEstimate(marks, { tracks, trapped: pool.chosen, image, conditions, spotSizePx });
+  results.push(withCautions(marked));
   results.push(heatFluxPrior(conditions));
   const byIsotropy = results.some((result) => result.valueM2 !== null && BY_ISOTROPY.includes(result.method));
   const combined = combine(results);

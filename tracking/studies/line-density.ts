@@ -10,6 +10,7 @@ import { piecesOf } from '../populations/pieces';
 import { RECIPE_DEFAULTS } from '../recipe';
 import { SETTLING_S } from '../simulate/beads-on-curved-lines';
 import { wavyVelocityFactor } from '../simulate/local-induction/wavy-velocity';
+import { marksOfScene } from '../simulate/marks-of-scene';
 import type { Scene } from '../simulate/scene';
 import { standardCamera } from '../simulate/standard-scene';
 import { tangleScene } from '../simulate/tangle-scene';
@@ -85,6 +86,8 @@ const RECIPE: Recipe = {
 /** Error added to the positions of true tracks. */
 const SIGMA_PX = 0.15;
 const SHORTEST_TRACK_FRAMES = 3;
+/** Frames in which every line is marked: some of them are there in all. */
+const MARKED_FRAMES = [20, 60, 100];
 
 /** What a tangle's tracks are, and the recipe by which they are looked at. */
 export interface TrackedTangle {
@@ -163,6 +166,7 @@ export function lineDensityTrials(
       conditions,
       recipe,
       { pieces, changes: found.changes },
+      marksOfScene(scene, MARKED_FRAMES),
     );
     // The prior speaks of the heat flux, from which the scene's lines are not made.
     return estimates

@@ -13,6 +13,9 @@ const EVER = { from: 0, to: Infinity };
 
 function holdsOf(correction: EditCorrection | Correction, made: number | null): Hold[] {
   switch (correction.kind) {
+    // Nobody's marks stand in the way of another's.
+    case 'mark-line':
+    case 'complete-frame':
     case 'undo':
       return [];
     case 'split': {

@@ -2,6 +2,7 @@ import { makesTrack, type Correction } from '@/tracking/corrections/correction';
 import type { CorrectionInput } from '@/lib/schemas/correction';
 import { conflicts, type Foreign } from './conflicts';
 import { PROVISIONAL_FROM, renumbered, tracksNamed, type EditCorrection, type Gesture } from './gesture';
+import type { LocalMarks } from './local-marks';
 import type { LocalTracks } from './local-tracks';
 
 type Change = Exclude<Correction, { kind: 'undo' }>;
@@ -45,6 +46,7 @@ interface EditLogOptions {
   userId: string;
   tab: string;
   tracks: LocalTracks;
+  marks: LocalMarks;
   newId: () => string;
   now: () => Date;
 }
@@ -79,6 +81,7 @@ export class EditLog {
     const made = changes.filter(makesTrack).map(() => PROVISIONAL_FROM + this.serial++);
     const gesture = this.gesture([...changes], made, words, frame);
     this.options.tracks.apply(gesture.id, changes, made);
+    this.options.marks.apply(gesture.id, gesture.corrections);
     this.pending.push(gesture);
     this.done.push({ words, gesture: gesture.id, undo: null, dropped: null });
     this.undone.length = 0;
@@ -104,7 +107,7 @@ export class EditLog {
     const last = this.pending.at(-1);
     if (last?.id === deed.gesture && this.inFlight !== last.id) {
       this.pending.pop();
-      this.options.tracks.drop(last.id);
+      this.hide(last.id);
       deed.dropped = last;
       return { words: deed.words, gesture: null, dropped: last.id };
     }
@@ -112,6 +115,22 @@ export class EditLog {
     deed.undo = undo.id;
     this.push(undo);
     return { words: deed.words, gesture: undo, dropped: null };
+  }
+
+  /**
+   * Takes back what was done at any time, by anyone.
+   * @param key gesture or correction that did it
+   * @param id of a stored correction of it; null for a gesture of this visit
+   */
+  takeBack(key: string, id: string | null, words: string, frame: number): Gesture {
+    const own = this.pending.some((gesture) => gesture.id === key) || this.ids.has(key);
+    const undo: EditCorrection =
+      id !== null && !own ? { kind: 'undo', of: id } : { kind: 'undo', ofGesture: key };
+    const gesture = this.gesture([undo], [], words, frame);
+    this.push(gesture);
+    this.done.push({ words, gesture: gesture.id, undo: null, dropped: null });
+    this.undone.length = 0;
+    return gesture;
   }
 
   /** Does again what was taken back last. */
@@ -129,7 +148,7 @@ export class EditLog {
     const last = this.pending.at(-1);
     if (last && last.id === deed.undo && this.inFlight !== last.id) {
       this.pending.pop();
-      this.options.tracks.drop(last.id);
+      this.hide(last.id);
       deed.undo = null;
       return { words: deed.words, gesture: null, dropped: last.id };
     }
@@ -212,6 +231,7 @@ export class EditLog {
     const numbers = new Map(gesture.made.map((number, i) => [number, made[i] ?? number]));
     this.rename(numbers);
     this.options.tracks.stored(id, revision);
+    this.options.marks.stored(id, revision);
     return numbers;
   }
 
@@ -271,8 +291,7 @@ export class EditLog {
 
   /** Shows what waits anew, on blocks that have come in since. What can't be shown still waits. */
   rebuild(): void {
-    const { tracks } = this.options;
-    for (const { id } of this.pending) tracks.drop(id);
+    for (const { id } of this.pending) this.hide(id);
     for (const gesture of this.pending) this.show(gesture);
   }
 
@@ -281,8 +300,14 @@ export class EditLog {
     this.show(gesture);
   }
 
+  private hide(id: string): void {
+    this.options.tracks.drop(id);
+    this.options.marks.drop(id);
+  }
+
   private show({ id, corrections, made }: Gesture): void {
-    const { tracks } = this.options;
+    const { tracks, marks } = this.options;
+    marks.apply(id, corrections);
     const [first] = corrections;
     if (first?.kind === 'undo') {
       // Of a gesture that was made before this visit nothing is known here: the server's tracks will show it.
@@ -299,7 +324,7 @@ export class EditLog {
 
   private putAside(gesture: Gesture, reason: string, again: boolean): AsideGesture {
     this.pending.splice(this.pending.indexOf(gesture), 1);
-    this.options.tracks.drop(gesture.id);
+    this.hide(gesture.id);
     for (const deeds of [this.done, this.undone]) {
       const at = deeds.findIndex((deed) => deed.gesture === gesture.id);
       if (at >= 0) deeds.splice(at, 1);
@@ -363,6 +388,10 @@ export function wordsOf(correction: Correction): string {
         from === undefined && to === undefined ? '' : ` in frames ${from ?? 0} to ${to ?? 'the end'}`;
       return `class track ${correction.track} ${correction.population}${part}`;
     }
+    case 'mark-line':
+      return `mark a line in frame ${correction.frame}`;
+    case 'complete-frame':
+      return `call frame ${correction.frame} complete`;
     case 'undo':
       return 'undo';
   }

@@ -2,6 +2,7 @@ import { ApiError } from '@/components/data/api-client';
 import type { CorrectionInput } from '@/lib/schemas/correction';
 import type { EditLog, StoredCorrection } from './edit-log';
 import type { Gesture } from './gesture';
+import type { MarksAnswer } from './local-marks';
 import type { GestureStore } from './kept-gestures';
 
 /** What the server says after storing a gesture. */
@@ -23,6 +24,8 @@ export interface LogAnswer {
 export interface CorrectionsApi {
   append(gesture: Gesture, corrections: readonly CorrectionInput[], revision: number): Promise<StoredAnswer>;
   since(revision: number): Promise<LogAnswer>;
+  /** Marks of lines that are in force. */
+  marks(): Promise<MarksAnswer>;
   /** Who has signed the analysis off; null while it can be changed. */
   closedBy(): Promise<string | null>;
 }
@@ -178,10 +181,12 @@ export class GestureSender {
     const own = new Set(this.log.pending.map(({ id }) => id));
     const seen = this.log.revision;
     const renumbered = new Map<number, number>();
+    let landed = false;
     // An answer that was lost on its way: the gesture is there, and must not be sent again.
     for (const id of own) {
       const mine = corrections.filter(({ gesture }) => gesture === id);
       if (mine.length === 0) continue;
+      landed = true;
       const made = mine.flatMap(({ made: number }) => (number === null ? [] : [number]));
       const { revision: at } = mine[mine.length - 1];
       for (const [from, to] of this.log.stored(id, at, mine[0].id, made)) renumbered.set(from, to);
@@ -193,8 +198,7 @@ export class GestureSender {
         at > seen && (gesture === null || !(own.has(gesture) || this.log.knows(gesture))),
     );
     const aside = this.log.foreign(foreign, revision, nextNumber);
-    if (foreign.length > 0 || renumbered.size > 0)
-      this.events.onChange({ foreign, renumbered, unseen: false });
+    if (foreign.length > 0 || landed) this.events.onChange({ foreign, renumbered, unseen: false });
     if (aside.length > 0) this.events.onAside();
   }
 

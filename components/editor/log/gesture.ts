@@ -1,4 +1,4 @@
-import type { Correction } from '@/tracking/corrections/correction';
+import { isMark, type Correction } from '@/tracking/corrections/correction';
 
 /** A correction as the editor keeps it: an undo may name a gesture that has no id of the server's yet. */
 export type EditCorrection =
@@ -40,7 +40,7 @@ export function renumbered(
 ): EditCorrection[] {
   const now = (number: number) => numbers.get(number) ?? number;
   return corrections.map((correction) => {
-    if (correction.kind === 'undo') return correction;
+    if (correction.kind === 'undo' || isMark(correction)) return correction;
     const copy = { ...correction };
     if (copy.track !== null) copy.track = now(copy.track);
     if (copy.kind === 'join') copy.with = now(copy.with);
@@ -52,7 +52,7 @@ export function renumbered(
 export function tracksNamed(corrections: readonly EditCorrection[]): number[] {
   const named = new Set<number>();
   for (const correction of corrections) {
-    if (correction.kind === 'undo') continue;
+    if (correction.kind === 'undo' || isMark(correction)) continue;
     if (correction.track !== null) named.add(correction.track);
     if (correction.kind === 'join') named.add(correction.with);
   }

@@ -1,6 +1,6 @@
 import { UNDECIDED, type TrackBlock } from '@/components/canvas/track-block';
 import { applyOne, type RecordingExtent } from '@/tracking/corrections/apply-one';
-import { makesTrack, type Correction } from '@/tracking/corrections/correction';
+import { isMark, makesTrack, type Correction } from '@/tracking/corrections/correction';
 import { emptyTrack, NOT_GIVEN, type EditedTrack } from '@/tracking/corrections/edited-track';
 import { givenStretches } from '@/tracking/corrections/pieces';
 import { rebuildBlock, type BlockTrack } from '../block-tracks';
@@ -91,7 +91,7 @@ export class LocalTracks {
     const numbers = [...made];
     for (const change of changes) {
       const fresh = makesTrack(change) ? numbers.shift()! : -1;
-      const model = change.track === null ? null : now(change.track);
+      const model = isMark(change) || change.track === null ? null : now(change.track);
       const store = {
         get: (number: number) => now(number)?.points ?? null,
         set: (number: number, points: EditedTrack | null) => {

@@ -13,6 +13,7 @@ export async function measureFlow(
 ): Promise<FlowMeasures> {
   return measure(await tracksAt(input.tracks), input.image, input.conditions, input.recipe, {
     known: input.known,
+    marks: input.marks,
     onProgress: (share) => onProgress(share),
   });
 }

@@ -10,12 +10,15 @@ import type { ListView, ProblemView } from '@/lib/views/common';
 import type {
   CorrectionList,
   CorrectionsStored,
+  MarksView,
   PresenceView,
   TrackPointsView,
 } from '@/lib/views/correction-view';
+import type { Estimate } from '@/tracking/estimates/estimate';
+import { marksOfScene } from '@/tracking/simulate/marks-of-scene';
 import { selectRows } from '@/models/queries/select';
 import { call, callJson, webSettings } from '../../helpers/call-route';
-import { CONDITIONS, makeDoneAnalysis, remeasureNow } from '../../helpers/corrected-analysis';
+import { CONDITIONS, makeDoneAnalysis, remeasureNow, smallTangle } from '../../helpers/corrected-analysis';
 import { freshDatabase, type FreshDatabase } from '../../helpers/fresh-database';
 import { makeTestLab, type TestLab } from '../../helpers/test-lab';
 
@@ -115,7 +118,7 @@ describe('a correction', () => {
       [
         { kind: 'turn', track: 1 },
         'kind',
-        'kind must be one of split, join, trim, remove, add-point, move-point, reclass, undo.',
+        'kind must be one of split, join, trim, remove, add-point, move-point, reclass, mark-line, complete-frame, undo.',
       ],
       [{ kind: 'split', track: 1, frame: -1 }, 'frame', 'frame must be a frame number from 0.'],
       [{}, 'corrections', 'Send one correction with its kind, or corrections: a list of them.'],
@@ -130,6 +133,13 @@ describe('a correction', () => {
         'corrections.1.track',
         'There is no track 1 now.',
       ],
+      [{ kind: 'mark-line', frame: 1, points: [[1, 1]] }, 'points', 'A marked line needs at least 2 points.'],
+      [
+        { kind: 'mark-line', frame: 1, points: [[1, 1], [1, 200]] }, // prettier-ignore
+        'points.1',
+        'Point 2 of the line lies outside the image of 200 x 200 px.',
+      ],
+      [{ kind: 'complete-frame', frame: 80 }, 'frame', 'The recording has frames 0 to 79. Received 80.'],
       [{ kind: 'undo', of: newId() }, 'of', 'There is no such correction in this analysis.'],
     ] as const) {
       const { status, body } = await send<Problem>(json);
@@ -304,6 +314,53 @@ describe('results of corrected tracks', () => {
   });
 });
 
+describe('lines that people mark', () => {
+  const estimate = async (method: string) => {
+    const all = JSON.parse(await table('estimates.json')) as Estimate[];
+    return all.find((one) => one.method === method && one.quantity === 'line_density')!;
+  };
+
+  it('give a line density of their own, for which nothing else is measured anew', async () => {
+    await remeasureNow(lab.labId, made.analysisId);
+    expect((await estimate('marked-chains')).note).toMatch(/^Nobody has marked lines/);
+    const pdfs = await table('velocity-pdf.csv');
+    const marked = marksOfScene(smallTangle(), [10, 40, 70]);
+    for (const { frame, lines } of marked) {
+      const corrections = [
+        ...lines.map((points) => ({ kind: 'mark-line', frame, points })),
+        { kind: 'complete-frame', frame },
+      ];
+      expect((await send({ corrections })).status).toBe(201);
+    }
+    const listed = (await get<MarksView>('/marks')).body;
+    expect(listed.items.filter(({ kind }) => kind === 'mark-line').map(({ points }) => points)).toEqual(
+      marked.flatMap(({ lines }) => lines),
+    );
+    expect(listed.items[0].by).toEqual({ id: lab.people.annotator.userId, name: lab.people.annotator.name });
+
+    expect(await remeasureNow(lab.labId, made.analysisId)).toEqual(['judgeTracks', 'measureFlowPart']);
+    const { inputs, note } = await estimate('marked-chains');
+    expect(inputs.completeFrames.value, note).toBe(3);
+    expect(inputs.lines.value).toBeGreaterThan(4);
+    expect(await table('velocity-pdf.csv')).toBe(pdfs);
+    expect((await get<AnalysisView>('')).body.staleSince).toBeNull();
+    // The whole measurement says the same.
+    const [, track] = longTracks().slice(40);
+    await send({ kind: 'split', track, frame: rawFrames(track)[0] + 2 });
+    expect(await remeasureNow(lab.labId, made.analysisId)).toEqual(['measureFlow']);
+    expect((await estimate('marked-chains')).inputs.lines).toEqual(inputs.lines);
+  });
+
+  it('are taken back like every correction', async () => {
+    const { items } = (await get<MarksView>('/marks')).body;
+    const undos = items.map(({ id }) => ({ kind: 'undo', of: id }));
+    expect((await send({ corrections: undos })).status).toBe(201);
+    expect((await get<MarksView>('/marks')).body.items).toEqual([]);
+    expect(await remeasureNow(lab.labId, made.analysisId)).toEqual(['judgeTracks', 'measureFlowPart']);
+    expect((await estimate('marked-chains')).note).toMatch(/^Nobody has marked lines/);
+  });
+});
+
 it('says who else has the analysis open', async () => {
   const post = (who: string, json: unknown) =>
     callJson<{ items: PresenceView[] }>('POST', `${made.path}/presence`, { token: who, json });
@@ -324,4 +381,5 @@ it('nobody else’s analysis can be corrected or looked into', async () => {
   expect((await callJson('POST', `${made.path}/corrections`, options)).status).toBe(404);
   expect((await get('/corrections', other.people.annotator.token)).status).toBe(404);
   expect((await get('/presence', other.people.annotator.token)).status).toBe(404);
+  expect((await get('/marks', other.people.annotator.token)).status).toBe(404);
 });

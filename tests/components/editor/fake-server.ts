@@ -4,6 +4,7 @@ import type { StoredCorrection } from '@/components/editor/log/edit-log';
 import type { CorrectionsApi, LogAnswer } from '@/components/editor/log/gesture-sender';
 import type { GestureStore } from '@/components/editor/log/kept-gestures';
 import type { Gesture } from '@/components/editor/log/gesture';
+import type { MarksAnswer, StoredMark } from '@/components/editor/log/local-marks';
 import type { CorrectionInput } from '@/lib/schemas/correction';
 import {
   appendCorrection,
@@ -11,7 +12,13 @@ import {
   rawTracks,
   type CorrectedTracks,
 } from '@/tracking/corrections/apply-corrections';
-import { CorrectionRefusal, makesTrack, type LoggedCorrection } from '@/tracking/corrections/correction';
+import {
+  CorrectionRefusal,
+  isMark,
+  makesTrack,
+  type LoggedCorrection,
+  type Mark,
+} from '@/tracking/corrections/correction';
 import { correctedTracks } from '@/tracking/corrections/pieces';
 import { NOT_GIVEN } from '@/tracking/corrections/edited-track';
 import type { Tracks } from '@/tracking/types';
@@ -123,6 +130,20 @@ export class FakeServer {
     };
   }
 
+  /** Marks of lines that are in force. */
+  marks(): MarksAnswer {
+    const { inForce } = this.state;
+    const marks = this.log.flatMap((entry, place): StoredMark[] => {
+      if (inForce[place] === 0 || !isMark(entry)) return [];
+      const mark: Mark =
+        entry.kind === 'mark-line'
+          ? { kind: entry.kind, frame: entry.frame, points: entry.points }
+          : { kind: entry.kind, frame: entry.frame };
+      return [{ mark, id: entry.id, gesture: entry.gesture ?? null, by: { id: entry.by, name: entry.by } }];
+    });
+    return { revision: this.log.length, marks };
+  }
+
   private view(entry: Entry): StoredCorrection {
     const place = this.log.indexOf(entry);
     const { id, gesture, by, made, ...correction } = entry;
@@ -166,6 +187,11 @@ export class Line implements CorrectionsApi {
   async since(revision: number): Promise<LogAnswer> {
     this.assertUp();
     return this.server.since(revision);
+  }
+
+  async marks(): Promise<MarksAnswer> {
+    this.assertUp();
+    return this.server.marks();
   }
 
   async closedBy(): Promise<string | null> {

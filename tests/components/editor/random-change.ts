@@ -38,7 +38,7 @@ export function randomChange(server: FakeServer, { integer, uniform }: Random): 
   const points = state.get(track)!;
   const frame = points.frame[integer(points.frame.length)];
   const place = { x_px: 500 * uniform(), y_px: 500 * uniform() };
-  switch (integer(8)) {
+  switch (integer(10)) {
     case 0:
       return { kind: 'split', track, frame };
     case 1:
@@ -55,6 +55,10 @@ export function randomChange(server: FakeServer, { integer, uniform }: Random): 
       return { kind: 'move-point', track, frame, ...place };
     case 6:
       return { kind: 'reclass', track, population: POPULATIONS[integer(3)] };
+    case 7:
+      return { kind: 'mark-line', frame, points: [[place.x_px, place.y_px], [500 * uniform(), 500 * uniform()]] }; // prettier-ignore
+    case 8:
+      return { kind: 'complete-frame', frame };
     default:
       return {
         kind: 'reclass',

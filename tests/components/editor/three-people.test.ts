@@ -2,7 +2,9 @@ import { describe, expect, it } from 'vitest';
 import type { TrackBlock } from '@/components/canvas/track-block';
 import { EditLog, type AsideGesture } from '@/components/editor/log/edit-log';
 import { GestureSender, type LinkState } from '@/components/editor/log/gesture-sender';
+import { LocalMarks } from '@/components/editor/log/local-marks';
 import { LocalTracks } from '@/components/editor/log/local-tracks';
+import { markedFrames } from '@/tracking/corrections/marked-frames';
 import { CorrectionRefusal } from '@/tracking/corrections/correction';
 import { createRandom, type Random } from '@/tracking/random';
 import { contents } from './block-contents';
@@ -17,6 +19,8 @@ class Person {
   log!: EditLog;
   sender!: GestureSender;
   tracks!: LocalTracks;
+  marks!: LocalMarks;
+  behind = false;
   blocks: TrackBlock[] = [];
   link: LinkState = { kind: 'idle' };
   made = 0;
@@ -37,11 +41,14 @@ class Person {
     const { revision, nextNumber, corrections } = this.server.since(0);
     this.look();
     this.tracks = new LocalTracks(() => this.blocks, EXTENT);
+    this.marks = new LocalMarks();
+    this.marks.renew(this.server.marks());
     this.log = new EditLog({
       analysisId: 'one',
       userId: this.name,
       tab: `${this.name} ${this.visit}`,
       tracks: this.tracks,
+      marks: this.marks,
       newId: () => `${this.name}-${String((this.made += 1)).padStart(4, '0')}`,
       now: () => new Date(0),
     });
@@ -55,6 +62,7 @@ class Person {
         onLink: (link) => (this.link = link),
         onChange: ({ foreign, unseen }) => {
           if (foreign.length > 0 || unseen) this.look();
+          if (foreign.length > 0 || this.marks.old) this.lookAtMarks();
           this.log.rebuild();
         },
         onAside: () => undefined,
@@ -69,6 +77,12 @@ class Person {
   look(): void {
     if (this.line.down) return;
     this.blocks = [this.server.block(0, 34), this.server.block(25, 59)];
+  }
+
+  /** Fetches the marks anew, as soon as the line is up. */
+  lookAtMarks(): void {
+    this.behind = this.line.down;
+    if (!this.behind) this.marks.renew(this.server.marks());
   }
 
   act(random: Random): void {
@@ -113,8 +127,8 @@ describe('three people at once over bad lines', () => {
     for (const person of people) {
       person.line.down = false;
       await person.sender.kick();
-      await person.sender.catchUp();
     }
+    for (const person of people) await person.sender.catchUp();
 
     // Each gesture that the server has, it has once, and whole.
     const gestures = server.log.map(({ gesture }) => gesture!);
@@ -132,6 +146,11 @@ describe('three people at once over bad lines', () => {
       for (const block of person.blocks) {
         expect(contents(person.tracks.shown(block))).toEqual(contents(server.block(block.from, block.to)));
       }
+      if (person.behind) person.lookAtMarks();
+      const marked = markedFrames(server.log, server.state.inForce);
+      expect(person.marks.frames()).toEqual(
+        marked.map(({ frame, lines, complete }) => ({ frame, lines: lines.length, complete })),
+      );
     }
   });
 
