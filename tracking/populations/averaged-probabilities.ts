@@ -1,6 +1,7 @@
 import { createRandom, mixSeed } from '../random';
 import { fitRows } from './fit-groups';
-import { refitMixture, responsibilities, type Component, type MixtureData } from './gaussian-mixture';
+import type { Component, MixtureData } from './component';
+import { refitMixture, responsibilities } from './gaussian-mixture';
 
 /** Mixtures that are averaged over: the rest of chance is then a fifth of what the average takes away. */
 const DRAWS = 20;

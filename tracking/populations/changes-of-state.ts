@@ -1,7 +1,8 @@
 import { trackSlice, type TrackSlice } from '../track-slice';
 import type { Conditions, Tracks } from '../types';
 import { placeAcross, type Standardised } from './feature-table';
-import { densityMeter, marginal, type Component } from './gaussian-mixture';
+import type { Component } from './component';
+import { densityMeter, marginal } from './gaussian-mixture';
 import { PIECE_FEATURES, PieceFeatures } from './piece-features';
 import { FEATURE_POSITIONS_MIN, FEATURES } from './track-features';
 

@@ -1,14 +1,8 @@
 import { averagedProbabilities } from './averaged-probabilities';
+import { meanAt, type Component, type MixtureData } from './component';
 import type { FeatureTable, Standardised } from './feature-table';
 import { fitGroups } from './fit-groups';
-import {
-  mixtureParameters,
-  meanAt,
-  responsibilities,
-  type Component,
-  type Mixture,
-  type MixtureData,
-} from './gaussian-mixture';
+import { mixtureParameters, responsibilities, type Mixture } from './gaussian-mixture';
 import { FEATURES } from './track-features';
 
 /** Two groups must better the criterion by this much (Kass & Raftery 1995: very strong). */

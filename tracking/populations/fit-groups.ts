@@ -1,6 +1,7 @@
 import { kmeans } from 'ml-kmeans';
 import { createRandom, mixSeed } from '../random';
-import { fitMixture, type Mixture, type MixtureData } from './gaussian-mixture';
+import type { MixtureData } from './component';
+import { fitMixture, type Mixture } from './gaussian-mixture';
 
 /** Starts of the clustering; those that end alike are followed once. */
 const STARTS = 20;

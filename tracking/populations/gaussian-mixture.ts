@@ -1,23 +1,6 @@
+import { meanAt, QUADRATIC, type Component, type MixtureData } from './component';
+import { rowWork, type RowWork } from './row-work';
 import { choleskyInPlace, choleskySolve, inverse } from './small-matrix';
-
-/** Data of a mixture: n rows of `dims` values with measurement variances, and one coordinate per row. */
-export interface MixtureData {
-  n: number;
-  dims: number;
-  value: Float64Array;
-  variance: Float64Array;
-  /** Coordinate on which the mean of the first value depends. */
-  coordinate: Float64Array;
-}
-
-/** One Gaussian: mean of value 0 is beta0 + beta1 c + beta2 c^2, the others are constants. */
-export interface Component {
-  weight: number;
-  /** beta0, beta1, beta2, then means of values 1 .. dims - 1. */
-  beta: Float64Array;
-  /** dims x dims, intrinsic: measurement errors excluded. */
-  covariance: Float64Array;
-}
 
 export interface Mixture {
   components: Component[];
@@ -28,7 +11,6 @@ export interface Mixture {
 
 /** Added to the diagonal of every covariance, in units of the standardised values. */
 const RIDGE = 1e-4;
-const QUADRATIC = 3;
 
 /** Free parameters of k components: means with a quadratic, covariances, weights. */
 export function mixtureParameters(k: number, dims: number): number {
@@ -39,7 +21,7 @@ export function mixtureParameters(k: number, dims: number): number {
 export function responsibilities(data: MixtureData, components: Component[]) {
   const k = components.length;
   const out = new Float64Array(data.n * k);
-  const work = new RowWork(data.dims);
+  const work = rowWork(data.dims);
   const lnTerms = new Float64Array(k);
   let lnLikelihood = 0;
   for (let i = 0; i < data.n; i++) {
@@ -59,7 +41,7 @@ export function responsibilities(data: MixtureData, components: Component[]) {
 
 /** Gives ln density of a row under a component, measurement errors included; its scratch is used again. */
 export function densityMeter(dims: number): (data: MixtureData, row: number, component: Component) => number {
-  const work = new RowWork(dims);
+  const work = rowWork(dims);
   return (data, row, component) => work.lnDensity(data, row, component);
 }
 
@@ -83,10 +65,12 @@ export function fitMixture(
   limits: { iterationsMax: number; relativeChange: number } = { iterationsMax: 500, relativeChange: 1e-6 },
 ): Mixture | null {
   let components = Array.from({ length: k }, () => blank(data.dims));
+  const room = roomFor(data);
   let q = start;
   let before = -Infinity;
   for (let iteration = 1; ; iteration++) {
-    for (let j = 0; j < k; j++) if (!maximise(data, q, k, j, components[j], iteration === 1)) return null;
+    for (let j = 0; j < k; j++)
+      if (!maximise(room, data, q, k, j, components[j], iteration === 1)) return null;
     const step = responsibilities(data, components);
     if (!Number.isFinite(step.lnLikelihood)) return null;
     q = step.responsibilities;
@@ -99,6 +83,18 @@ export function fitMixture(
     }
   }
 }
+
+/** What one step of maximising works with, used again by the next. */
+interface Room {
+  work: RowWork;
+  /** Rows of true values as far as they are known. */
+  latent: Float64Array;
+}
+
+const roomFor = ({ n, dims }: MixtureData): Room => ({
+  work: rowWork(dims),
+  latent: new Float64Array(n * dims),
+});
 
 function blank(dims: number): Component {
   const covariance = new Float64Array(dims * dims);
@@ -124,16 +120,19 @@ export function refitMixture(
     beta: beta.slice(),
     covariance: covariance.slice(),
   }));
+  const room = roomFor(data);
   for (let step = 0; step < steps; step++) {
     const { responsibilities: q, lnLikelihood } = responsibilities(data, components);
     if (!Number.isFinite(lnLikelihood)) return null;
-    for (let j = 0; j < k; j++) if (!maximise(data, q, k, j, components[j], false, rowWeight)) return null;
+    for (let j = 0; j < k; j++)
+      if (!maximise(room, data, q, k, j, components[j], false, rowWeight)) return null;
   }
   return components;
 }
 
 /** Updates one component from the responsibilities; false where it has lost its members. */
 function maximise(
+  { work, latent }: Room,
   data: MixtureData,
   q: Float64Array,
   k: number,
@@ -143,10 +142,8 @@ function maximise(
   rowWeight?: ArrayLike<number>,
 ): boolean {
   const { n, dims } = data;
-  const work = new RowWork(dims);
   const precision = inverse(c.covariance, dims);
   if (!precision) return false;
-  const latent = new Float64Array(n * dims);
   const spread = new Float64Array(dims * dims);
   // Sums of weight * coordinate^m, and of weight * coordinate^m * value, m = 0..2, per value.
   const powers = new Float64Array(2 * QUADRATIC - 1);
@@ -213,71 +210,4 @@ function solveMeans(
   choleskySolve(normal, p, right);
   c.beta.set(right);
   return true;
-}
-
-/** Mean of a component at a coordinate. */
-export function meanAt(c: Component, coordinate: number, dims: number, out: Float64Array): void {
-  out[0] = c.beta[0] + c.beta[1] * coordinate + c.beta[2] * coordinate * coordinate;
-  for (let d = 1; d < dims; d++) out[d] = c.beta[QUADRATIC - 1 + d];
-}
-
-/** Scratch for one row at a time. */
-class RowWork {
-  readonly latent: Float64Array;
-  readonly covariance: Float64Array;
-  private readonly factor: Float64Array;
-  private readonly residual: Float64Array;
-  private readonly solved: Float64Array;
-  private readonly mean: Float64Array;
-  private readonly column: Float64Array;
-
-  constructor(private readonly dims: number) {
-    this.latent = new Float64Array(dims);
-    this.covariance = new Float64Array(dims * dims);
-    this.factor = new Float64Array(dims * dims);
-    this.residual = new Float64Array(dims);
-    this.solved = new Float64Array(dims);
-    this.mean = new Float64Array(dims);
-    this.column = new Float64Array(dims);
-  }
-
-  private factorise(data: MixtureData, i: number, c: Component): number {
-    const { dims } = this;
-    this.factor.set(c.covariance);
-    for (let d = 0; d < dims; d++) this.factor[d * dims + d] += data.variance[i * dims + d];
-    meanAt(c, data.coordinate[i], dims, this.mean);
-    for (let d = 0; d < dims; d++) this.residual[d] = data.value[i * dims + d] - this.mean[d];
-    this.solved.set(this.residual);
-    const lnDet = choleskyInPlace(this.factor, dims);
-    choleskySolve(this.factor, dims, this.solved);
-    return lnDet;
-  }
-
-  lnDensity(data: MixtureData, i: number, c: Component): number {
-    const lnDet = this.factorise(data, i, c);
-    let distance2 = 0;
-    for (let d = 0; d < this.dims; d++) distance2 += this.residual[d] * this.solved[d];
-    return -0.5 * (distance2 + lnDet + this.dims * Math.log(2 * Math.PI));
-  }
-
-  /** Mean and covariance of the true values of a row, given what was measured. */
-  condition(data: MixtureData, i: number, c: Component): void {
-    const { dims } = this;
-    this.factorise(data, i, c);
-    const { column } = this;
-    for (let d = 0; d < dims; d++) {
-      let shift = 0;
-      for (let e = 0; e < dims; e++) shift += c.covariance[d * dims + e] * this.solved[e];
-      this.latent[d] = this.mean[d] + shift;
-    }
-    for (let e = 0; e < dims; e++) {
-      for (let d = 0; d < dims; d++) column[d] = c.covariance[d * dims + e];
-      choleskySolve(this.factor, dims, column);
-      for (let d = 0; d < dims; d++) {
-        let sum = c.covariance[d * dims + e];
-        for (let f = 0; f < dims; f++) sum -= c.covariance[d * dims + f] * column[f];
-        this.covariance[d * dims + e] = sum;
-      }
-    }
-  }
 }

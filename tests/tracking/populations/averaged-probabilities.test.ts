@@ -1,7 +1,8 @@
 import { expect, test } from 'vitest';
 import { averagedProbabilities } from '@/tracking/populations/averaged-probabilities';
 import { fitGroups } from '@/tracking/populations/fit-groups';
-import { responsibilities, type Component, type MixtureData } from '@/tracking/populations/gaussian-mixture';
+import type { Component, MixtureData } from '@/tracking/populations/component';
+import { responsibilities } from '@/tracking/populations/gaussian-mixture';
 import { createRandom } from '@/tracking/random';
 
 const DIMS = 4;
