@@ -1,5 +1,7 @@
 import { meanAt, QUADRATIC, type Component, type MixtureData } from './component';
-import { rowWork, type RowWork } from './row-work';
+import { RowOfAny } from './row-of-any';
+import { RowOfFour } from './row-of-four';
+import type { RowWork } from './row-work';
 import { choleskyInPlace, choleskySolve, inverse } from './small-matrix';
 
 export interface Mixture {
@@ -11,6 +13,9 @@ export interface Mixture {
 
 /** Added to the diagonal of every covariance, in units of the standardised values. */
 const RIDGE = 1e-4;
+
+/** Tracks have four features, for which everything is written out; the two agree to the bit. */
+const rowWork = (dims: number): RowWork => (dims === 4 ? new RowOfFour() : new RowOfAny(dims));
 
 /** Free parameters of k components: means with a quadratic, covariances, weights. */
 export function mixtureParameters(k: number, dims: number): number {

@@ -1,8 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import { createRandom } from '@/tracking/random';
 import type { Component, MixtureData } from '@/tracking/populations/component';
+import { RowOfAny } from '@/tracking/populations/row-of-any';
 import { RowOfFour } from '@/tracking/populations/row-of-four';
-import { RowOfAny } from '@/tracking/populations/row-work';
 
 const ROWS = 200;
 
