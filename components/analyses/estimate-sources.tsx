@@ -24,7 +24,8 @@ const SOURCES: Record<string, string> = {
   'heat-flux-prior':
     'L = γ²(v_ns − v_0)² (Vinen 1957; Adachi, Fujiyama & Tsubota, Phys. Rev. B 81, 104511 (2010)).',
   decay: '1/L grows by χ₂κ/2π per time (Vinen 1957).',
-  'marked-chains': 'L = (4/π) Λ/(A h) over chains that a person marked.',
+  'marked-chains':
+    'L = (4/π) Λ/(A h s) from the projected length Λ of lines that people marked in complete frames; the share s of a line between its outermost tracers follows from the tracers per marked length (Poisson along isotropic lines).',
   combined:
     'Random-effects mean of ln L (DerSimonian & Laird 1986); methods that share tracers count as one; none where they disagree at 1 in 100.',
 };

@@ -42,6 +42,7 @@ const COUNTED: readonly [input: string, words: string][] = [
   ['pairsOnOneLinePerFrame', 'pairs a frame'],
   ['pairsOnOneLine', 'pairs'],
   ['linesPerFrame', 'lines a frame'],
+  ['lines', 'marked lines'],
   ['tracks', 'tracks'],
   ['velocities', 'velocities'],
   ['trappedPerFrame', 'tracers a frame'],

@@ -1,8 +1,8 @@
 import type { Page } from 'playwright-core';
 import { expect, it } from 'vitest';
-import type { CorrectionView } from '@/lib/views/correction-view';
+import type { CorrectionView, MarksView } from '@/lib/views/correction-view';
 import { until } from '../../helpers/until';
-import { analysisId, analyst, choose, log, people, press, stored } from './review-day';
+import { analysisId, analyst, choose, log, people, press, script, stored } from './review-day';
 
 /** What must be in the log once: by whom, what, of which track. */
 const expected: { by: string; kind: CorrectionView['kind']; track: number }[] = [];
@@ -126,6 +126,35 @@ export function theyCorrect(): void {
       inForce: false,
     });
   }, 120_000);
+
+  it('a line that one marks stands before the other, who takes it away; the frame stays complete', async () => {
+    const [ada, bo] = people;
+    for (const { page } of [ada, bo]) {
+      await page.getByRole('slider', { name: 'Frame' }).focus();
+      await page.keyboard.press('Home');
+      await page.getByText('frame 0 of 48').waitFor();
+      await page.getByRole('application').focus();
+    }
+    await press(ada, 'k', /^Mark a line: click from its first tracer/);
+    await press(ada, 'Enter', /^Point 1: x /);
+    await press(ada, 'ArrowRight', /^x /);
+    await ada.page.keyboard.press('ArrowRight');
+    await press(ada, 'Enter', /^Point 2: x /);
+    await press(ada, 'k', /^Mark a line in frame 0: done/);
+    await press(ada, 'k', /^No more lines are marked/);
+    await press(ada, 'c', /^Frame 0 is complete with one line/);
+    await stored(ada);
+    await bo.page.getByText('Frame 0: one line, complete.').waitFor({ timeout: 60_000 });
+    await bo.page.getByText(`Line 1, 2 px, ${ada.person.name}`).waitFor();
+    await bo.page.getByRole('button', { name: 'Remove marked line 1' }).click();
+    await bo.page.getByText('Frame 0: no line, complete.').waitFor();
+    await stored(bo);
+    await ada.page.getByText('Frame 0: no line, complete.').waitFor({ timeout: 60_000 });
+    const marks = await script.json<MarksView>(`/api/v1/analyses/${analysisId}/marks`);
+    expect(marks.items.map(({ kind, frame, by }) => [kind, frame, by?.id])).toEqual([
+      ['complete-frame', 0, ada.person.userId],
+    ]);
+  }, 180_000);
 
   it('what was corrected is in the tables, and what the machine made as well', async () => {
     const numbers = async (query: string) => {
