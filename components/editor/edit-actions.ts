@@ -66,10 +66,13 @@ export function classTrack(
   };
 }
 
+/** Finer than any position is known, and short to write. */
+const thousandth = (px: number): number => Math.round(1000 * px) / 1000;
+
 /** A vortex line through places in one frame. */
 export function markLine(frame: number, points: readonly Point[]): Act {
   return {
-    changes: [{ kind: 'mark-line', frame, points: points.map(({ x, y }) => [x, y]) }],
+    changes: [{ kind: 'mark-line', frame, points: points.map(({ x, y }) => [thousandth(x), thousandth(y)]) }],
     words: `mark a line in ${frameText(frame)}`,
   };
 }

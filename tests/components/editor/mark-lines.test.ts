@@ -46,7 +46,9 @@ function opened(readOnly: string | null = null) {
   return { server, line, session, controller, viewer, said, settle, block };
 }
 
-/** Two tracers of the frame. */
+const thousandth = (px: number) => Math.round(1000 * px) / 1000;
+
+/** Tracers of the frame. */
 function tracers({ block }: ReturnType<typeof opened>) {
   const there: { x: number; y: number }[] = [];
   for (let i = 0; i < block.count; i += 1) {
@@ -69,9 +71,9 @@ describe('marking lines in the editor', () => {
     controller.pick({ x: two.x + 1, y: two.y }, 6);
     expect(session.marks.lines(FRAME).map(({ points }) => points)).toEqual([
       [
-        [one.x, one.y],
+        [thousandth(one.x), thousandth(one.y)],
         [5, 5],
-        [two.x, two.y],
+        [thousandth(two.x), thousandth(two.y)],
       ],
     ]);
     // The next line can be begun at once.
