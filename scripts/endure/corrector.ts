@@ -12,7 +12,7 @@ const CORRECTIONS_EACH = 12;
 const THINK_MS = 150;
 
 /** One correction as it was sent. */
-export type Sent = Record<string, unknown> & { kind: string; track: number };
+export type Sent = Record<string, unknown> & { kind: string };
 
 /** An analysis with the corrections that the server has acknowledged, oldest first. */
 export interface CorrectedAnalysis extends OwnAnalysis {
@@ -79,10 +79,20 @@ function draw(window: TrackWindowView, random: Random): Sent | null {
   const i = random.integer(window.tracks.length);
   const [track, first, last] = [window.tracks[i], window.firstFrame![i], window.lastFrame![i]];
   const kind = random.uniform();
+  if (kind > 0.85) return drawMark(window, random);
   if (kind < 0.15) return { kind: 'remove', track };
   if (kind < 0.5 && last - first > 6) return { kind: 'split', track, frame: (first + last) >> 1 };
   if (kind < 0.65 && last - first > 8) return { kind: 'trim', track, from: first + 2, to: last - 2 };
   return { kind: 'reclass', track, population: pick(['trapped', 'free', 'undecided'], random) };
+}
+
+/** A line between points of two tracks in one frame, or the word that the frame is complete. */
+function drawMark({ start, frame, x, y }: TrackWindowView, random: Random): Sent {
+  const [one, other] = [start, start].map((of) => of[random.integer(of.length - 1)]);
+  if (random.uniform() < 0.4) return { kind: 'complete-frame', frame: frame[one] };
+  // Never without a length, whichever points were drawn.
+  const end = x[one] === x[other] && y[one] === y[other] ? [0, 0] : [x[other], y[other]];
+  return { kind: 'mark-line', frame: frame[one], points: [[x[one], y[one]], end] };
 }
 
 /** Waits until nothing is older than the last correction, and keeps what the tables say then. */
