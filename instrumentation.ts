@@ -5,6 +5,8 @@ const NOT_LOADED = /^Failed to load (external module|chunk)/;
 export async function register(): Promise<void> {
   if (process.env.NEXT_RUNTIME === 'nodejs' && process.env.DATABASE_URL) {
     try {
+      // Pictures are made by the first who asks for one: by then there may be no descriptor left to load this with.
+      await import('sharp');
       const { startHousekeeping } = await import('./app/api/housekeeping');
       startHousekeeping();
     } catch (error) {
