@@ -87,9 +87,14 @@ function layMarks({ frame, lines }: MarkedFrame, recording: MarkedRecording): La
     if (nearest < 0) others++;
     else marks[nearest].own.push(track);
   }
+  const areaPx2 = width * height;
   const swathPx2 = marks.reduce((sum, { lengthPx }) => sum + 2 * reachPx * lengthPx, 0);
-  const perPx2 = others / Math.max(width * height - swathPx2, swathPx2, 1);
-  for (const mark of marks) mark.tracers = mark.own.length - perPx2 * 2 * reachPx * mark.lengthPx;
+  // Swaths of marks that cross share their crossing.
+  const perPx2 = others / (areaPx2 * Math.exp(-swathPx2 / areaPx2));
+  const swathShare = swathPx2 > 0 ? (areaPx2 * -Math.expm1(-swathPx2 / areaPx2)) / swathPx2 : 0;
+  for (const mark of marks) {
+    mark.tracers = mark.own.length - perPx2 * swathShare * 2 * reachPx * mark.lengthPx;
+  }
   return { marks, markOf };
 }
 

@@ -1,10 +1,10 @@
 import { describe, expect, test } from 'vitest';
 import type { MarkedFrame } from '@/tracking/corrections/marked-frames';
-import { chainsInSheet, perThicknessOf } from '@/tracking/estimates/chains-in-sheet';
+import { chainsInSheet, chordsOfBox, perLengthOf } from '@/tracking/estimates/chains-in-sheet';
 import { markedChainsEstimate } from '@/tracking/estimates/marked-chains';
 import { marksAndTracers } from '@/tracking/estimates/marks-and-tracers';
 import { createRandom } from '@/tracking/random';
-import { isotropicLines } from '@/tracking/simulate/isotropic-lines';
+import { isotropicLines, type Box } from '@/tracking/simulate/isotropic-lines';
 import { marksOfScene } from '@/tracking/simulate/marks-of-scene';
 import { KIND_TRAPPED } from '@/tracking/simulate/scene';
 import { tangleScene } from '@/tracking/simulate/tangle-scene';
@@ -43,37 +43,59 @@ const estimate = (marks: readonly MarkedFrame[], { recording }: ReturnType<typeo
   markedChainsEstimate(marks, { ...recording, conditions: { ...conditions, ...over } });
 
 describe('chains of tracers in a sheet', () => {
-  test('share between the outermost tracers agrees with counting on simulated lines', () => {
-    const random = createRandom(5);
-    const rate = 4;
-    let [between, whole, tracers] = [0, 0, 0];
-    // A slab so wide that hardly a line ends at its sides.
-    for (let round = 0; round < 40; round++) {
-      for (const line of isotropicLines(random, { low: [-60, -60, 0], high: [60, 60, 0.3] }, 0.2)) {
-        const across = Math.hypot(line.direction[0], line.direction[1]);
-        const length = line.to - line.from;
-        whole += length * across;
-        const places = Array.from({ length: random.poisson(rate * length) }, () => random.uniform() * length);
-        if (places.length < 2) continue;
-        tracers += places.length;
-        between += (Math.max(...places) - Math.min(...places)) * across;
+  test.each([
+    [120, 0.2],
+    // So small that the edges cut most of the lines that lie in the sheet.
+    [1, 400],
+  ])(
+    'share between the outermost tracers agrees with counting on lines simulated in a sheet %f wide',
+    (width, density) => {
+      const random = createRandom(5);
+      const rate = 4;
+      const h = 0.3;
+      const shortest = 0.05;
+      const box: Box = { low: [0, 0, 0], high: [width, width, h] };
+      let [between, whole, tracers] = [0, 0, 0];
+      for (let round = 0; round < 40; round++) {
+        for (const line of isotropicLines(random, box, density)) {
+          const across = Math.hypot(line.direction[0], line.direction[1]);
+          const length = line.to - line.from;
+          whole += length * across;
+          const places = Array.from(
+            { length: random.poisson(rate * length) },
+            () => random.uniform() * length,
+          );
+          if (places.length < 2) continue;
+          const shown = (Math.max(...places) - Math.min(...places)) * across;
+          if (shown < shortest) continue;
+          tracers += places.length;
+          between += shown;
+        }
       }
-    }
-    const expected = chainsInSheet(rate * 0.3);
-    expectWithin(between / whole, expected.shareBetween, { rel: 0.03 });
-    expectWithin((tracers / between) * 0.3, expected.tracersPerThickness, { rel: 0.03 });
+      const expected = chainsInSheet(chordsOfBox(width, width, h), rate, shortest);
+      expectWithin(between / whole, expected.shareBetween, { rel: 0.03 });
+      expectWithin(tracers / between, expected.tracersPerLengthM, { rel: 0.03 });
+    },
+  );
+
+  test('pieces are those of a wide sheet: h / cos long, pi / 4 in projection', () => {
+    const { lengthM, across } = chordsOfBox(1e4, 1e4, 1);
+    // Weighed by their length, cosines are uniform; the median one is 1 / 2 and its piece 2 h long.
+    expectWithin([...lengthM].sort((a, b) => a - b)[lengthM.length >> 1], 2, { rel: 0.01 });
+    expectWithin(across.reduce((a, b) => a + b, 0) / across.length, Math.PI / 4, { rel: 1e-3 });
   });
 
-  test('many tracers show all of the lines, pi / 4 of their length in projection', () => {
-    const { shareBetween, tracersPerThickness } = chainsInSheet(500);
+  test('many tracers show all of the lines', () => {
+    const { shareBetween, tracersPerLengthM } = chainsInSheet(chordsOfBox(1e3, 1e3, 1), 500, 0);
     expect(shareBetween).toBeGreaterThan(0.99);
-    // Average of the sine over isotropic directions is pi / 4.
-    expectWithin(tracersPerThickness, (500 * 4) / Math.PI, { rel: 0.01 });
+    expectWithin(tracersPerLengthM, (500 * 4) / Math.PI, { rel: 0.01 });
   });
 
   test('tracers per length follow from those per length of chain', () => {
-    for (const n of [0.01, 0.3, 1, 4, 60]) {
-      expectWithin(perThicknessOf(chainsInSheet(n).tracersPerThickness), n, { rel: 1e-6 });
+    const chords = chordsOfBox(20, 10, 1);
+    for (const rate of [0.01, 0.3, 1, 4, 60]) {
+      const { tracersPerLengthM } = chainsInSheet(chords, rate, 0.1);
+      expectWithin(perLengthOf(chords, tracersPerLengthM, 0.1), rate, { rel: 1e-5 });
     }
   });
 });
