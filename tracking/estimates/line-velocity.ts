@@ -1,6 +1,7 @@
 import type { EstimateContext } from './context';
 import { blockError } from './image-blocks';
 import { notUsable, type DensityResult } from './interval';
+import { widthByParts } from './line-spread';
 import { transverseMotion } from './line-motion';
 import {
   LINE_VELOCITY_FACTOR,
@@ -46,8 +47,9 @@ export function lineVelocityEstimate(context: EstimateContext): DensityResult {
   const valueM2 = densityFromTransverse(variance0);
   const byVariance = powerOfVariance(variance0);
   const { groups, tracks, image } = context;
+  const ofLines = byLine(best.influence0, groups);
   const error = Math.max(
-    sumError(byLine(best.influence0, groups), perhapsOneLine(groups)),
+    sumError(ofLines, perhapsOneLine(groups)) * widthByParts(ofLines),
     blockError(best.influence0, tracks, image),
   );
   const statistical = (byVariance * error) / variance0;

@@ -1,5 +1,5 @@
 import { describe, expect, test } from 'vitest';
-import { widenForFewLines } from '@/tracking/estimates/line-spread';
+import { widenForFewLines, widthByParts } from '@/tracking/estimates/line-spread';
 import { linesBend } from '@/tracking/estimates/lines-bend';
 import { nearPoints } from '@/tracking/estimates/near-points';
 import type { PairMotion } from '@/tracking/estimates/pair-motion';
@@ -45,6 +45,15 @@ describe('errors of sums', () => {
     // Kish 1965: weights 3, 1, 1, 1 are worth 36 / 12 = 3 lines.
     const three = Math.sqrt(3 / 2) * (studentHalfWidth(0.95, 2) / 1.959963985);
     expectWithin(widenForFewLines(1, Float64Array.of(3, 1, 1, 1)), three, { rel: 1e-6 });
+  });
+
+  test('a sum of squares is as certain as its fourth powers say', () => {
+    // Satterthwaite 1946: ten equal parts are 2 x 10^2 / 10 = 20 degrees of freedom, small ones beside them add none.
+    const ten = new Float64Array(1000).fill(1e-6).fill(-2, 0, 10);
+    expectWithin(widthByParts(ten), studentHalfWidth(0.95, 20) / 1.959963985, { rel: 1e-6 });
+    // 2 x 12^2 / 84 = 3.4.
+    const few = Float64Array.of(3, -1, 1, 1);
+    expectWithin(widthByParts(few), studentHalfWidth(0.95, 3) / 1.959963985, { rel: 1e-6 });
   });
 });
 
