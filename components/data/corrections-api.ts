@@ -1,6 +1,6 @@
 import type { Point } from '@/components/canvas/view-box';
 import type { RefinedPoint } from '@/components/editor/edit-state';
-import type { StoredCorrection } from '@/components/editor/log/edit-log';
+import type { StoredCorrection } from '@/components/editor/log/stored-correction';
 import type { CorrectionsApi } from '@/components/editor/log/gesture-sender';
 import type { PersonHere } from '@/components/editor/people-here';
 import type { AnalysisView } from '@/lib/views/analysis-view';

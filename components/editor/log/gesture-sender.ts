@@ -1,6 +1,7 @@
 import { ApiError } from '@/components/data/api-client';
 import type { CorrectionInput } from '@/lib/schemas/correction';
-import type { EditLog, StoredCorrection } from './edit-log';
+import type { EditLog } from './edit-log';
+import type { StoredCorrection } from './stored-correction';
 import type { Gesture } from './gesture';
 import type { MarksAnswer } from './local-marks';
 import type { GestureStore } from './kept-gestures';

@@ -1,6 +1,6 @@
 import { ApiError, LINK_LOST } from '@/components/data/api-client';
 import { toTrackBlock, type TrackBlock } from '@/components/canvas/track-block';
-import type { StoredCorrection } from '@/components/editor/log/edit-log';
+import type { StoredCorrection } from '@/components/editor/log/stored-correction';
 import type { CorrectionsApi, LogAnswer } from '@/components/editor/log/gesture-sender';
 import type { GestureStore } from '@/components/editor/log/kept-gestures';
 import type { Gesture } from '@/components/editor/log/gesture';
