@@ -1,7 +1,6 @@
 import { accelerations } from './details/accelerations';
 import { channelProfiles } from './details/channel-profiles';
 import { compareWithExpected } from './details/compare-with-expected';
-import { featurePoints } from './details/feature-points';
 import { tangleShape } from './details/tangle-shape';
 import { tracersOverTime } from './details/tracers-over-time';
 import { measureDispersion, type Dispersion } from './dispersion/dispersion';
@@ -12,7 +11,7 @@ import type { FlowDetails, FlowMeasures, ImageSize, PairSummary, TrackMeasures }
 import type { ReconnectionCandidate } from './pairs/candidate';
 import { findCandidates } from './pairs/find-candidates';
 import { piecesOf, segmentsOf, type Pieces } from './populations/pieces';
-import type { TrackPopulations } from './populations/populations';
+import type { NamedTracks } from './populations/named-tracks';
 import { velocityTails, type VelocityTail } from './tails/velocity-tails';
 import { trackMeans } from './track-means';
 import type { Conditions, Recipe, Tracks } from './types';
@@ -45,7 +44,7 @@ export interface FlowInput {
   image: ImageSize;
   conditions: Conditions;
   recipe: Recipe;
-  found: TrackPopulations;
+  found: NamedTracks;
   /** Lines that people marked. */
   marks?: readonly MarkedFrame[];
 }
@@ -104,7 +103,7 @@ function measureEstimates(
     overTime: tracersOverTime(all, population, line, image, conditions, context),
     profiles: channelProfiles(all, population, line, image, conditions, lag, context),
     shape: context && tangleShape(context),
-    features: featurePoints(found.table, found.population, found.pTrapped, recipe.seed),
+    features: found.features,
     changes: found.changes,
     segments: segmentsOf(pieces),
   };
@@ -125,7 +124,7 @@ function lineOfTracks({ track }: Pieces, line: Int32Array, tracks: number): Int3
 }
 
 /** All parts put together. */
-export function assembleFlow(found: TrackPopulations, parts: FlowPartResults): FlowMeasures {
+export function assembleFlow(found: NamedTracks, parts: FlowPartResults): FlowMeasures {
   const { densities, spreading, tails, pairs, estimates } = parts;
   return {
     tracks: { population: found.population, pTrapped: found.pTrapped, ...estimates.tracks },

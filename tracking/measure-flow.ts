@@ -1,7 +1,8 @@
 import type { FlowMeasures, ImageSize, KnownPopulations, MeasureFlowOptions } from './flow-measures';
 import { assembleFlow, measureFlowPart, type FlowInput, type FlowPart } from './flow-parts';
 import { applyKnown } from './populations/known-populations';
-import { findPopulations, type TrackPopulations } from './populations/populations';
+import { namedTracks, type NamedTracks } from './populations/named-tracks';
+import { findPopulations } from './populations/populations';
 import type { Conditions, Recipe, Tracks } from './types';
 
 export type { FlowMeasures, ImageSize, MeasureFlowOptions } from './flow-measures';
@@ -45,7 +46,7 @@ export function judgeTracks(
   conditions: Conditions,
   recipe: Recipe,
   known?: KnownPopulations,
-): TrackPopulations {
+): NamedTracks {
   const judged = findPopulations(tracks, image, conditions, recipe);
-  return known ? applyKnown(judged, known) : judged;
+  return namedTracks(known ? applyKnown(judged, known) : judged, recipe.seed);
 }

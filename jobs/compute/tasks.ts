@@ -10,7 +10,7 @@ import type { MarkedFrame } from '@/tracking/corrections/marked-frames';
 import type { FlowMeasures, ImageSize, KnownPopulations } from '@/tracking/flow-measures';
 import type { FlowInput, FlowPart, FlowPartResults } from '@/tracking/flow-parts';
 import type { PlacedSpot } from '@/tracking/detect';
-import type { TrackPopulations } from '@/tracking/populations/populations';
+import type { NamedTracks } from '@/tracking/populations/named-tracks';
 import type { Conditions, Recipe, RecipeRequest, Spots, Tracks } from '@/tracking/types';
 import type { TracksAt } from './track-file';
 
@@ -156,7 +156,7 @@ export interface Tasks {
   detectChunk: { input: DetectChunkInput; output: DetectChunkOutput };
   linkTracks: { input: LinkTracksInput; output: LinkTracksOutput };
   measureFlow: { input: MeasureFlowInput; output: FlowMeasures };
-  judgeTracks: { input: MeasureFlowInput; output: TrackPopulations };
+  judgeTracks: { input: MeasureFlowInput; output: NamedTracks };
   measureFlowPart: { input: MeasureFlowPartInput; output: FlowPartResults[FlowPart] };
   tryRecipe: { input: TryRecipeInput; output: TryRecipeOutput };
   /** How many were composed. */

@@ -46,8 +46,8 @@ export interface LocalAnalysis {
 
 /**
  * A stack from bytes to numbers without server or database, through the same computations as the
- * jobs, spread over the children of the pool. Where there are several, frames are analysed while they
- * are still being checked; nothing is given out before the check has ended well.
+ * jobs, spread over the children of the pool. The check of all frames is asked for behind the last piece of
+ * detection, so that a child that has no part in linking has it to do; nothing is given out before it has ended well.
  * @throws InputError for a stack that can't be used, ComputeError for a recipe that can't be run.
  */
 export async function analyseStack(request: LocalRequest, pool: ComputePool): Promise<LocalAnalysis> {
@@ -61,14 +61,21 @@ export async function analyseStack(request: LocalRequest, pool: ComputePool): Pr
     { timeoutMs: LONG_TIMEOUT_MS, onCpu: clock.cpuOf('check') },
   );
   if (indexed.state === 'refused') throw new InputError(indexed.refusal.detail);
-  const checking = checkStack(request, pool, clock);
+  let checking: Promise<ReadyStack> | null = null;
+  const check = () => {
+    checking ??= checkStack(request, pool, clock);
+    // Whoever waits for it hears what is wrong; until then nobody does.
+    checking.catch(() => undefined);
+    return checking;
+  };
   try {
-    const [stack, analysed] = await Promise.all([checking, analyseFrames(request, indexed, pool, clock)]);
+    const analysed = await analyseFrames(request, indexed, pool, clock, check);
+    const stack = await check();
     const wholeS = (performance.now() - began) / 1000;
     return { stack, ...analysed, timingsS: clock.timingsS, cpuS: clock.cpuS, wholeS };
   } catch (cause) {
     // What is wrong with the stack says more than what went wrong on its frames.
-    await checking;
+    await check();
     throw cause;
   }
 }
@@ -96,6 +103,7 @@ async function analyseFrames(
   { frames, width, height }: { frames: number; width: number; height: number },
   pool: ComputePool,
   clock: StageClock,
+  detectionAsked: () => void,
 ) {
   const image = { frames, width, height };
   const { model, recipe, facts } = await clock.time('measure-image', (options) =>
@@ -108,7 +116,7 @@ async function analyseFrames(
   const found = await clock.time('detect-spots', ({ onProgress, onCpu }) => {
     const chunks = chunksOf(frames, chunkFrames ?? chunkFramesFor(frames, width, height));
     let done = 0;
-    return Promise.all(
+    const detected = Promise.all(
       chunks.map(async ({ chunk, firstFrame, frames: many }): Promise<DetectChunkOutput> => {
         const input = { stackDir: workDir, model, modelKey: workDir, recipe, firstFrame, frames: many };
         const result = await pool.run('detectChunk', input, { key: workDir, onCpu });
@@ -118,6 +126,8 @@ async function analyseFrames(
         return result;
       }),
     );
+    detectionAsked();
+    return detected;
   });
   const tracksPath = join(workDir, 'tracks.bin');
   const chunkPaths = found.map((_, chunk) => spotsPath(workDir, chunk));

@@ -16,13 +16,14 @@ export function replayedSeconds({ cpuS }: Pick<LocalAnalysis, 'cpuS'>, workers: 
   const [indexS, ...checkS] = cpuS.check;
   const [namingS, ...partsS] = cpuS['measure-flow'];
   const index = piece(indexS, []);
-  const check = checkS.map((seconds) => piece(seconds, [index]));
   const image = cpuS['measure-image'].map((seconds) => piece(seconds, [index]));
   const detect = cpuS['detect-spots'].map((seconds) => piece(seconds, image));
+  // Asked for behind detection, which waits for the image.
+  const check = checkS.map((seconds) => piece(seconds, image));
   const link = cpuS['link-tracks'].map((seconds) => piece(seconds, detect));
   const naming = piece(namingS, link);
   const parts = partsS.map((seconds) => piece(seconds, [naming]));
-  return lengthOf([index, ...check, ...image, ...detect, ...link, naming, ...parts], workers);
+  return lengthOf([index, ...image, ...detect, ...check, ...link, naming, ...parts], workers);
 }
 
 /** End of the last piece; pieces come in an order in which each stands behind those that it waits for. */

@@ -1,6 +1,7 @@
 import { orderStatistics } from '../order-statistics';
 import type { ComponentReader } from '../velocity-pdfs/component-samples';
 import { mostInTail, TAIL_SAMPLES_LEAST } from './power-law-tail';
+import { sortLargestFirst } from './sort-largest-first';
 
 /** The largest sizes of velocity of one population, and the tracks that they come from. */
 export interface TailSamples {
@@ -60,25 +61,6 @@ export function tailSamples(
     size[at] = one;
     owner[at++] = track;
   });
-  return { samples, ...descending(size, owner) };
-}
-
-/** Sizes from the largest on with their owners; equal ones keep their order. `size` is used up. */
-function descending(size: Float64Array, owner: Uint32Array): Pick<TailSamples, 'sizeMS' | 'track'> {
-  const n = size.length;
-  const sizeMS = size.slice().sort().reverse();
-  const track = new Uint32Array(n);
-  /** How many of those that are equal have their place already, by the first of their places. */
-  const placed = new Uint32Array(n);
-  for (let k = 0; k < n; k++) {
-    let low = 0;
-    let high = n - 1;
-    while (low < high) {
-      const middle = (low + high) >> 1;
-      if (sizeMS[middle] > size[k]) low = middle + 1;
-      else high = middle;
-    }
-    track[low + placed[low]++] = owner[k];
-  }
-  return { sizeMS, track };
+  sortLargestFirst(size, owner);
+  return { samples, sizeMS: size, track: owner };
 }

@@ -1,7 +1,7 @@
 import type { FlowMeasures } from '@/tracking/flow-measures';
 import { measureFlowPart as measurePart, type FlowPart, type FlowPartResults } from '@/tracking/flow-parts';
 import { judgeTracks as judge, measureFlow as measure } from '@/tracking/measure-flow';
-import type { TrackPopulations } from '@/tracking/populations/populations';
+import type { NamedTracks } from '@/tracking/populations/named-tracks';
 import type { MeasureFlowInput, MeasureFlowPartInput } from '../tasks';
 import { tracksAt } from '../track-file';
 import type { WorkContext } from './work-context';
@@ -19,7 +19,7 @@ export async function measureFlow(
 }
 
 /** Populations alone: what every part of the flow measures goes on from. */
-export async function judgeTracks(input: MeasureFlowInput): Promise<TrackPopulations> {
+export async function judgeTracks(input: MeasureFlowInput): Promise<NamedTracks> {
   return judge(await tracksAt(input.tracks), input.image, input.conditions, input.recipe, input.known);
 }
 
