@@ -13,6 +13,8 @@ export const engineFlags = (heapMB: number): string[] => [
   `--heap-growing-percent=${OLD_GROWTH_PERCENT}`,
   // A process that waits for its next recording would forget what it compiled.
   '--no-flush-bytecode',
+  // Nor what its objects look like, which compiled code is given up along with.
+  '--retain-maps-for-n-gc=1000000',
   '--expose-gc',
   '--enable-source-maps',
 ];
