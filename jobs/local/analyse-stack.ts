@@ -63,9 +63,11 @@ export async function analyseStack(request: LocalRequest, pool: ComputePool): Pr
   if (indexed.state === 'refused') throw new InputError(indexed.refusal.detail);
   let checking: Promise<ReadyStack> | null = null;
   const check = () => {
-    checking ??= checkStack(request, pool, clock);
-    // Whoever waits for it hears what is wrong; until then nobody does.
-    checking.catch(() => undefined);
+    if (!checking) {
+      checking = checkStack(request, pool, clock);
+      // What is wrong is heard below, once the frames are through; until then nobody listens.
+      checking.catch(() => undefined);
+    }
     return checking;
   };
   try {

@@ -28,7 +28,7 @@ export type Theme = 'light' | 'dark';
 export interface Visit {
   context: BrowserContext;
   page: Page;
-  /** What the page complained of in the console. */
+  /** What the page complained of in the console, and the address that it was about. */
   complaints: string[];
 }
 
@@ -48,7 +48,7 @@ export async function openWindow(
   const page = await context.newPage();
   const complaints: string[] = [];
   page.on('console', (message) => {
-    if (message.type() === 'error') complaints.push(message.text());
+    if (message.type() === 'error') complaints.push(`${message.text()} (${message.location().url})`);
   });
   page.on('pageerror', (error) => complaints.push(error.message));
   return { context, page, complaints };
