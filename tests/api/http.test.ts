@@ -77,6 +77,15 @@ describe('signing in over HTTP', () => {
   });
 });
 
+describe('an icon', () => {
+  it('stands where browsers look for it when no page names one, as beside a file', async () => {
+    const response = await get('/favicon.ico');
+    expect(response.status).toBe(200);
+    // Microsoft's ICO container: reserved 0, type 1, three pictures.
+    expect([...new Uint16Array(await response.arrayBuffer(), 0, 3)]).toEqual([0, 1, 3]);
+  });
+});
+
 describe('every answer', () => {
   it.each([
     '/sign-in',

@@ -150,7 +150,7 @@ async function look(
     // Rules don't depend on the window.
     if (size === 'wide') await expectNoSeriousViolation(page, theme, `${path} in ${theme}`);
     const expected404 = path === '/nowhere' || path === '/lab/storage';
-    const unexpected = complaints.filter((text) => !(expected404 && /40[34]/.test(text)));
+    const unexpected = complaints.filter((text) => !(expected404 && /status of 40[34]/.test(text)));
     expect(unexpected, `${path} in ${theme} at ${size}`).toEqual([]);
   }
   await context.close();
