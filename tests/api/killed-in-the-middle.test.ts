@@ -1,4 +1,5 @@
 import { readFile } from 'node:fs/promises';
+import { setTimeout } from 'node:timers/promises';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { AnalysisView } from '@/lib/views/analysis-view';
 import type { RecordingView } from '@/lib/views/recording-view';
@@ -14,6 +15,8 @@ import { until } from '../helpers/until';
 
 /** The one that other tests share must not be killed. */
 let server: Awaited<ReturnType<typeof startServer>>;
+/** How long the line of an upload that is cut is held once its bytes are sent. */
+const LINE_HELD_MS = 600;
 const SLOW = { withinMs: 120_000, everyMs: 100 };
 
 async function kill(name: string): Promise<void> {
@@ -67,7 +70,9 @@ describe('processes killed in the middle of their work', () => {
       filename: 'cut.tif',
       run: runId,
     });
-    const sending = breakUpload(script, location, 0, bytes, half);
+    const sending = breakUpload(script, location, 0, bytes, half, LINE_HELD_MS);
+    // Killed at once, the server might be gone before the line to it stands.
+    await setTimeout(LINE_HELD_MS / 3);
     await kill('web');
     await sending;
     const offset = await patiently(() => uploadOffset(script, location));
