@@ -79,7 +79,7 @@ export function HistoryTable({ analysisId, reason }: HistoryTableProps) {
                     <HeadCell>Revision</HeadCell>
                     <HeadCell narrow="hide">When</HeadCell>
                     <HeadCell>What was done</HeadCell>
-                    <HeadCell>Change it</HeadCell>
+                    {reason ? null : <HeadCell>Change it</HeadCell>}
                   </tr>
                 </thead>
                 <tbody>
@@ -104,29 +104,31 @@ export function HistoryTable({ analysisId, reason }: HistoryTableProps) {
                           <span className="block text-small text-ink-3">taken back since</span>
                         )}
                       </Cell>
-                      <Cell>
-                        <span className="flex flex-wrap gap-2">
-                          {item.inForce && !reason ? (
-                            <Button
-                              kind="bare"
-                              busy={busy === item.id}
-                              aria-label={`Take back correction ${item.revision}`}
-                              onClick={() => void takeBack(item)}
-                            >
-                              Take back
-                            </Button>
-                          ) : null}
-                          {item.revision < revision && !reason ? (
-                            <Button
-                              kind="bare"
-                              aria-label={`Return to revision ${item.revision}`}
-                              onClick={() => setRestoring(item.revision)}
-                            >
-                              Return to here
-                            </Button>
-                          ) : null}
-                        </span>
-                      </Cell>
+                      {reason ? null : (
+                        <Cell>
+                          <span className="flex flex-wrap gap-2">
+                            {item.inForce ? (
+                              <Button
+                                kind="bare"
+                                busy={busy === item.id}
+                                aria-label={`Take back correction ${item.revision}`}
+                                onClick={() => void takeBack(item)}
+                              >
+                                Take back
+                              </Button>
+                            ) : null}
+                            {item.revision < revision ? (
+                              <Button
+                                kind="bare"
+                                aria-label={`Return to revision ${item.revision}`}
+                                onClick={() => setRestoring(item.revision)}
+                              >
+                                Return to here
+                              </Button>
+                            ) : null}
+                          </span>
+                        </Cell>
+                      )}
                     </Row>
                   ))}
                 </tbody>

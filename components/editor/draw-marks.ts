@@ -1,13 +1,9 @@
 import type { OverlayScene } from '@/components/canvas/frame-well';
 import { CASING, CASING_EXTRA_PX } from '@/components/canvas/stroke-style';
 import { toScreen, type Point } from '@/components/canvas/view-box';
+import { MARK_COLOUR, MARK_DASHES_PX, MARK_PX } from '@/components/ui/strokes';
 import type { ShownLine } from './log/local-marks';
 
-/** Long and short strokes in turn: no track is drawn so. */
-const MARK_DASHES_PX = [11, 4, 2, 4];
-const MARK_PX = 1.4;
-/** What people drew is white: colours are for what the machine tells apart. */
-const MARK_COLOUR = '#eef2f3';
 const END_PX = 5;
 
 /** Lines that people marked in the frame shown, with a short bar across either end. */

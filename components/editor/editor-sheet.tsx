@@ -201,7 +201,7 @@ export function EditorSheet(props: EditorSheetProps) {
         >
           <StrokeLegend
             onWell
-            strokes={['trapped', 'free', 'undecided']}
+            strokes={['trapped', 'free', 'undecided', 'marked line']}
             note={`trails of ${TRAIL_FRAMES} frames`}
           />
         </ViewerPanel>

@@ -1,9 +1,15 @@
 /** Populations and events as the same strokes wherever they appear: legend, image, plot, print. */
-export type Stroke = 'trapped' | 'free' | 'undecided' | 'event';
+export type Stroke = 'trapped' | 'free' | 'undecided' | 'event' | 'marked line';
+
+/** What people drew is white on images: colours are for what the machine tells apart. */
+export const MARK_COLOUR = '#eef2f3';
+/** Long and short strokes in turn: no track is drawn so. */
+export const MARK_DASHES_PX = [11, 4, 2, 4];
+export const MARK_PX = 1.4;
 
 /** A stroke in a legend. On a dark chip beside images, plain beside plots. */
 export function StrokeSample({ stroke, onWell = false }: { stroke: Stroke; onWell?: boolean }) {
-  const colour = onWell ? `var(--well-${stroke})` : `var(--${stroke})`;
+  const colour = stroke === 'marked line' ? MARK_COLOUR : `var(--${onWell ? 'well-' : ''}${stroke})`;
   return (
     <svg
       width="34"
@@ -39,6 +45,14 @@ function Drawn({ stroke, colour }: { stroke: Stroke; colour: string }) {
   if (stroke === 'free') return <path d="M3 6.2C12 4 20 5.2 31 4.4V7.6C20 8 12 5 3 6.7Z" fill={colour} />;
   if (stroke === 'undecided') {
     return <path d={WAVE} fill="none" stroke={colour} strokeWidth="1.4" strokeDasharray="4 3.5" />;
+  }
+  if (stroke === 'marked line') {
+    return (
+      <g fill="none" stroke={colour} strokeWidth={MARK_PX}>
+        <path d="M3 6H31" strokeDasharray={MARK_DASHES_PX.join(' ')} />
+        <path d="M3 2V10M31 2V10" />
+      </g>
+    );
   }
   return (
     <path

@@ -3,7 +3,8 @@ import { notUsable, type DensityResult } from './interval';
 import { fellowLength } from './sheet-geometry';
 
 const HOW = {
-  motion: 'pairs that move as one line, for isotropic lines straight over the spacing',
+  motion:
+    'pairs that move as one line, near ones counting more, for isotropic lines straight over the spacing',
   place:
     'how many more tracers stand near one than around it, for isotropic lines straight over half the spacing',
 };
@@ -30,7 +31,8 @@ export function beadsPerLength(context: EstimateContext): DensityResult {
     return notUsable('beads-per-length', note, { ...inputs, ...product });
   }
   // Of L ~ G(h) / h: thickness enters G as well and cancels in part.
-  const more = fellowLength(fellows.lowM, fellows.highM, h * (1 + THICKNESS_ERROR)) / (1 + THICKNESS_ERROR);
+  const { lowM, highM, fadeM } = fellows;
+  const more = fellowLength(lowM, highM, h * (1 + THICKNESS_ERROR), fadeM) / (1 + THICKNESS_ERROR);
   const byThickness = Math.log(more / fellows.fellowLengthM);
   return {
     method: 'beads-per-length',
@@ -41,8 +43,9 @@ export function beadsPerLength(context: EstimateContext): DensityResult {
       ...inputs,
       tracersPerLength: { value: fellows.tracersPerLengthM, unit: 'm^-1' },
       pairsOnOneLinePerFrame: { value: fellows.pairs, unit: '' },
-      pairDistanceFrom: { value: fellows.lowM, unit: 'm' },
-      pairDistanceTo: { value: fellows.highM, unit: 'm' },
+      pairDistanceFrom: { value: lowM, unit: 'm' },
+      pairDistanceTo: { value: highM, unit: 'm' },
+      pairsFadeOver: { value: Number.isFinite(fadeM) ? fadeM : null, unit: 'm' },
     },
     note: `Trapped tracers per volume over tracers per length of line; the length comes from ${HOW[by]}.${
       bends ? ' The lines bend: near tracers of one line don’t move as one.' : ''

@@ -1,7 +1,9 @@
 import { ClusteredRatios } from '../resampling/clustered-ratios';
 import { unitFlow } from '../velocities';
 import type { EstimateContext } from './context';
+import { seenLines } from './seen-lines';
 import { decoratedShare } from './sheet-geometry';
+import { usedPart } from './used-tracks';
 
 /** Below this share of lines with a tracer the correction for dark lines is larger than what is counted. */
 const DECORATED_LEAST = 0.3;
@@ -9,10 +11,11 @@ const DECORATED_LEAST = 0.3;
 const ORDER_LEAST = 0.3;
 
 /** Says where most lines carry no tracer; empty otherwise. */
-export function darkLines({ fellows, nearest, conditions }: EstimateContext): string {
+export function darkLines({ fellows, used, conditions }: EstimateContext): string {
   const h = conditions.sheetThickness_m;
   if (!fellows || !h) return '';
-  const share = decoratedShare(fellows.tracersPerLengthM * nearest.usedShare * h);
+  const seen = fellows.byLine && seenLines(fellows.byLine, h);
+  const share = seen?.share ?? decoratedShare(fellows.tracersPerLengthM * usedPart(used) * h);
   return share < DECORATED_LEAST
     ? ` Few lines are decorated (${Math.round(100 * share)} % carry a tracer), so the result rests on the correction for dark ones.`
     : '';

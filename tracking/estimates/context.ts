@@ -3,6 +3,7 @@ import type { FoundFellows } from './find-fellows';
 import type { LineGroups } from './line-groups';
 import type { NearestLines } from './nearest-lines';
 import type { TrappedPool } from './trapped-pool';
+import type { UsedTracks } from './used-tracks';
 
 /** What the methods that look at trapped tracers share. */
 export interface EstimateContext extends FoundFellows {
@@ -12,9 +13,9 @@ export interface EstimateContext extends FoundFellows {
   recipe: Recipe;
   pool: TrappedPool;
   groups: LineGroups;
+  /** Tracks long enough to be joined to their lines. */
+  used: UsedTracks;
   nearest: NearestLines;
-  /** Points per frame of the tracks of a line, by line. */
-  tracersByLine: Float64Array;
 }
 
 /** Why lines can't be told apart, for the methods that count them; null where they can. */

@@ -1,8 +1,9 @@
 import { ANISOTROPY_ERROR, THICKNESS_ERROR, type EstimateContext, whyNotTold } from './context';
 import { notUsable, type DensityResult } from './interval';
+import { errorBetween, type UntoldOn } from './fellows';
 import { widenForFewLines } from './line-spread';
+import { seenLines } from './seen-lines';
 import { sumError } from './shared-motion';
-import { decoratedShare, decoratedSharePower } from './sheet-geometry';
 import { lineDensityFromCrossings, spacingFromDensity } from './stereology';
 
 /** A sheet thicker than this part of the spacing is no plane that lines cross. */
@@ -32,13 +33,13 @@ export function crossingsEstimate(context: EstimateContext): DensityResult {
       'The thickness of the light sheet is not given, so lines without tracers can’t be counted; low is the lower limit.';
     return notUsable(method, note, inputs, atLeastM2);
   }
-  if (!fellows) {
+  const seen = fellows?.byLine && seenLines(fellows.byLine, h);
+  if (!fellows?.byLine || !seen) {
     const note =
       'Hardly any two tracers share a line, so the share of lines without tracers is unknown; low is the lower limit.';
     return notUsable(method, note, inputs, atLeastM2);
   }
-  const usedPerLengthM = fellows.tracersPerLengthM * nearest.usedShare;
-  const share = decoratedShare(usedPerLengthM * h);
+  const { share } = seen;
   const valueM2 = atLeastM2 / share;
   const filled = { ...inputs, decoratedShare: { value: share, unit: '' } };
   const part = h / spacingFromDensity(valueM2);
@@ -46,16 +47,23 @@ export function crossingsEstimate(context: EstimateContext): DensityResult {
     const note = `The light sheet is ${part.toFixed(1)} times as thick as the lines are apart; crossings need less than ${THIN_PART}.`;
     return notUsable(method, note, filled);
   }
-  const byShare = decoratedSharePower(usedPerLengthM * h) * fellows.perLengthError;
   // Lines come as a Poisson process, each for the share of the time that it is seen.
-  const lines = nearest.present.map((of) => of / nearest.linesPerFrame);
-  const error = Math.hypot(widenForFewLines(sumError(lines, []), lines), byShare);
-  const thicker = decoratedShare(usedPerLengthM * h * (1 + THICKNESS_ERROR));
+  const square = (on: UntoldOn) => {
+    const bySeen = seen.influence(on);
+    return (
+      sumError(
+        nearest.present.map((of, l) => of / nearest.linesPerFrame - bySeen[l]),
+        [],
+      ) ** 2
+    );
+  };
+  const error = Math.hypot(errorBetween(square), seen.untoldError);
+  const thicker = seenLines(fellows.byLine, h * (1 + THICKNESS_ERROR))?.share ?? share;
   return {
     method,
     valueM2,
-    statistical: error,
-    systematic: Math.hypot(ANISOTROPY_ERROR, Math.log(thicker / share)),
+    statistical: widenForFewLines(error, fellows.byLine.all.pairs.ownLines),
+    systematic: Math.hypot(ANISOTROPY_ERROR, Math.log(thicker / share), seen.doubt),
     inputs: filled,
     note: `Lines that cross the sheet per area, twice; lines without tracers added (${Math.round(100 * share)} % carry one).`,
   };

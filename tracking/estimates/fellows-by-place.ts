@@ -99,9 +99,10 @@ function fellowsWithin(
     pairs: perLength * length(near),
     lowM: near.from,
     highM: near.to,
+    fadeM: Infinity,
     fellowLengthM: length(near),
     densityError: BLOCKS_MISS * widenForFewLines(spread(n.map((of, b) => 2 * of - f[b])), n),
-    perLengthError: BLOCKS_MISS * widenForFewLines(spread(n.map((of, b) => f[b] - of)), n),
+    byLine: null,
   };
 }
 

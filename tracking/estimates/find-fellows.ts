@@ -5,6 +5,7 @@ import { fellowsByPlace } from './fellows-by-place';
 import type { LineGroups } from './line-groups';
 import { linesBend } from './lines-bend';
 import type { TrappedPool } from './trapped-pool';
+import type { UsedTracks } from './used-tracks';
 
 /** How tracers of one line were told from others, and whether their lines keep their shape. */
 export interface FoundFellows {
@@ -28,7 +29,7 @@ export function findFellows(
   tracks: Tracks,
   pool: TrappedPool,
   groups: LineGroups,
-  tracersByLine: Float64Array,
+  used: UsedTracks,
   image: { width: number; height: number; frames: number },
   conditions: Pick<Conditions, 'pixelSize_m'>,
   thicknessM: number,
@@ -39,7 +40,7 @@ export function findFellows(
   const bends = linesBend(groups, lowPx, Math.max(NEAR_STEPS * lowPx, NEAR_PART * typicalPx));
   const known = (of: Fellows | null) => (of && of.densityError < ERROR_MOST ? of : null);
   if (groups.told && !bends) {
-    const motion = fellowsByMotion(pool, groups, tracersByLine, image, conditions, thicknessM, spotSizePx);
+    const motion = fellowsByMotion(pool, groups, used, image, conditions, thicknessM, spotSizePx);
     if (known(motion)) return { fellows: motion, by: 'motion', bends };
   }
   const place = known(fellowsByPlace(tracks, pool, image, conditions, thicknessM, spotSizePx));

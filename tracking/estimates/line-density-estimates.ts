@@ -19,6 +19,7 @@ import { markedChainsEstimate } from './marked-chains';
 import { nearestLines } from './nearest-lines';
 import { neighbourDistanceEstimate } from './neighbour-distance';
 import { trappedPool } from './trapped-pool';
+import { usedTracks } from './used-tracks';
 import { visibleLengthEstimate } from './visible-length';
 
 const BY_TRACERS: readonly [EstimateMethod, (context: EstimateContext) => DensityResult][] = [
@@ -91,15 +92,11 @@ export function lineDensityEstimates(
 
   function shared(): EstimateContext {
     const h = conditions.sheetThickness_m;
-    const tracersByLine = new Float64Array(groups.lines);
-    for (let i = 0; i < tracks.count; i++) {
-      if (groups.line[i] >= 0)
-        tracersByLine[groups.line[i]] += (tracks.start[i + 1] - tracks.start[i]) / image.frames;
-    }
+    const used = usedTracks(tracks, groups);
     const found = h
-      ? findFellows(tracks, pool, groups, tracersByLine, image, conditions, h, recipe.spotSizePx)
+      ? findFellows(tracks, pool, groups, used, image, conditions, h, recipe.spotSizePx)
       : { fellows: null, by: 'motion' as const, bends: false };
-    const nearest = nearestLines(tracks, pool, groups, image, conditions.pixelSize_m);
-    return { tracks, image, conditions, recipe, pool, groups, ...found, nearest, tracersByLine };
+    const nearest = nearestLines(tracks, used.used, groups, image, conditions.pixelSize_m);
+    return { tracks, image, conditions, recipe, pool, groups, used, ...found, nearest };
   }
 }

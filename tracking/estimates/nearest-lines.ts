@@ -2,17 +2,9 @@ import { mixSeed } from '../random';
 import type { Tracks } from '../types';
 import type { LineGroups } from './line-groups';
 import { nearPoints } from './near-points';
-import type { TrappedPool } from './trapped-pool';
 
 /** Frames looked at, evenly over the recording: the pattern changes slowly. */
 const FRAMES_MAX = 40;
-/**
- * Tracks shorter than this many times what tells two apart are left out: they could not be joined
- * to their lines and would count as lines of their own. Leaving tracers out at random only lowers
- * the share of lines that carry one, which is allowed for.
- */
-const LENGTH_FACTOR = 2;
-
 /** Nearest distances between different lines, summed by line, so that lines can be resampled. */
 export interface NearestLines {
   /** Distances that end at a neighbour, not at the edge of the image. */
@@ -23,10 +15,6 @@ export interface NearestLines {
   present: Float64Array;
   /** Lines per frame: the sum of the shares. */
   linesPerFrame: number;
-  /** 1 for tracks that are long enough to be joined to their lines. */
-  used: Uint8Array;
-  /** Share of the trapped points that belong to tracks long enough to be used. */
-  usedShare: number;
   /**
    * Lines that are seen no further apart than lines typically are, each pair once: what is measured of
    * them depends on each other, since a distance between two is often the nearest one of both.
@@ -39,10 +27,12 @@ export interface NearestLines {
  * one of another line is measured, and cut off at the edge of the image, beyond which a nearer one
  * may lie. For points scattered at random the area pi r^2 is exponential, so their number per area
  * is ended distances over summed areas, whatever is cut off.
+ *
+ * @param used 1 for tracks that are long enough to be joined to their lines.
  */
 export function nearestLines(
   tracks: Tracks,
-  pool: TrappedPool,
+  used: Uint8Array,
   groups: LineGroups,
   image: { width: number; height: number; frames: number },
   pixelSizeM: number,
@@ -50,17 +40,6 @@ export function nearestLines(
   const ended = new Float64Array(groups.lines);
   const areaM2 = new Float64Array(groups.lines);
   const step = Math.max(1, Math.floor(image.frames / FRAMES_MAX));
-  const used = new Uint8Array(tracks.count);
-  let usedPoints = 0;
-  let points = 0;
-  for (let i = 0; i < tracks.count; i++) {
-    if (pool.chosen[i] !== 1) continue;
-    const length = tracks.start[i + 1] - tracks.start[i];
-    points += length;
-    if (length < LENGTH_FACTOR * groups.leastFrames) continue;
-    used[i] = 1;
-    usedPoints += length;
-  }
   const present = new Float64Array(groups.lines);
   const neighbours = new Map<number, [number, number]>();
   let frames = 0;
@@ -85,9 +64,7 @@ export function nearestLines(
     ended,
     areaM2,
     present,
-    used,
     linesPerFrame: present.reduce((a, b) => a + b, 0),
-    usedShare: points > 0 ? usedPoints / points : 0,
     neighbours: [...neighbours.values()],
   };
 }

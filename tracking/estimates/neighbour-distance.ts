@@ -1,8 +1,9 @@
 import { ANISOTROPY_ERROR, THICKNESS_ERROR, type EstimateContext, whyNotTold } from './context';
 import { notUsable, type DensityResult } from './interval';
+import { errorBetween, type UntoldOn } from './fellows';
 import { widenForFewLines } from './line-spread';
+import { seenLines } from './seen-lines';
 import { sumError } from './shared-motion';
-import { decoratedShare, decoratedSharePower } from './sheet-geometry';
 import { lineDensityFromNeighbourDistance, neighbourDistance } from './stereology';
 
 /** Above this part of the spacing the thickness of the sheet matters more than a correction can mend. */
@@ -37,13 +38,13 @@ export function neighbourDistanceEstimate(context: EstimateContext): DensityResu
       'The thickness of the light sheet is not given, so lines without tracers can’t be counted; low is the lower limit.';
     return notUsable(method, note, inputs, seenM2);
   }
-  if (!fellows) {
+  const seen = fellows?.byLine && seenLines(fellows.byLine, h);
+  if (!fellows?.byLine || !seen) {
     const note =
       'Hardly any two tracers share a line, so the share of lines without tracers is unknown; low is the lower limit.';
     return notUsable(method, note, inputs, seenM2);
   }
-  const usedPerLengthM = fellows.tracersPerLengthM * nearest.usedShare;
-  const share = decoratedShare(usedPerLengthM * h);
+  const { share } = seen;
   const valueM2 = seenM2 / share;
   const filled = { ...inputs, decoratedShare: { value: share, unit: '' } };
   const part = h * Math.sqrt(valueM2);
@@ -51,19 +52,30 @@ export function neighbourDistanceEstimate(context: EstimateContext): DensityResu
     const note = `The light sheet is ${part.toFixed(1)} times as thick as the lines are apart: distances in its projection say nothing.`;
     return notUsable(method, note, filled);
   }
-  const byShare = decoratedSharePower(usedPerLengthM * h) * fellows.perLengthError;
   const ended = total(nearest.ended);
   const area = total(nearest.areaM2);
-  // What each line adds to ln L beyond its share: ended distances over areas.
-  const influence = nearest.ended.map((of, l) => of / ended - nearest.areaM2[l] / area);
-  const error = Math.hypot(widenForFewLines(sumError(influence, nearest.neighbours), nearest.ended), byShare);
-  const thicker = decoratedShare(usedPerLengthM * h * (1 + THICKNESS_ERROR));
+  // What each line adds to ln L beyond its share: ended distances over areas, those of neighbours being related.
+  const byDistance = nearest.ended.map((of, l) => of / ended - nearest.areaM2[l] / area);
+  const ofNeighbours = sumError(byDistance, nearest.neighbours) ** 2 - sumError(byDistance, []) ** 2;
+  const square = (on: UntoldOn) => {
+    const bySeen = seen.influence(on);
+    return (
+      ofNeighbours +
+      sumError(
+        byDistance.map((of, l) => of - bySeen[l]),
+        [],
+      ) **
+        2
+    );
+  };
+  const error = Math.hypot(errorBetween(square), seen.untoldError);
+  const thicker = seenLines(fellows.byLine, h * (1 + THICKNESS_ERROR))?.share ?? share;
   const thick = part > THIN_PART;
   return {
     method,
     valueM2,
-    statistical: error,
-    systematic: Math.hypot(ANISOTROPY_ERROR, Math.log(thicker / share), thick ? THICK_ERROR : 0),
+    statistical: widenForFewLines(error, nearest.ended),
+    systematic: Math.hypot(ANISOTROPY_ERROR, Math.log(thicker / share), seen.doubt, thick ? THICK_ERROR : 0),
     inputs: filled,
     note: `Distance between neighbouring lines, lines without tracers added (${Math.round(100 * share)} % carry one)${thick ? '; the sheet is not thin against the spacing' : ''}.`,
   };

@@ -12,11 +12,11 @@ const CHAINS_LEAST = 8;
  */
 export function visibleLengthEstimate(context: EstimateContext): DensityResult {
   const method = 'visible-length';
-  const { tracks, groups, nearest, pool, image, conditions } = context;
+  const { tracks, groups, used, pool, image, conditions } = context;
   const h = conditions.sheetThickness_m;
   const untold = whyNotTold(context);
   if (untold) return notUsable(method, untold);
-  const chains = chainLengths(tracks, groups, nearest.used, image.frames);
+  const chains = chainLengths(tracks, groups, used.used, image.frames);
   const lengthPx = chains.lengthPx.reduce((a, b) => a + b, 0);
   const perAreaPerM = (lengthPx * conditions.pixelSize_m) / pool.areaM2;
   const inputs = {

@@ -134,6 +134,22 @@ describe('geometry of lines in a sheet', () => {
     expectWithin(fellowLength(0, 1e-3, 1), Math.PI * 1e-3, { rel: 0.02 });
   });
 
+  test('faded lengths are those of rings, each as it fades', () => {
+    for (const h of [0.1, 0.5, 4]) {
+      const [low, high, fade, rings] = [0.1, 0.6, 0.2, 500];
+      let sum = 0;
+      for (let k = 0; k < rings; k++) {
+        const from = low + ((high - low) * k) / rings;
+        const to = low + ((high - low) * (k + 1)) / rings;
+        sum += Math.exp(-(from + to) / 2 / fade) * fellowLength(from, to, h);
+      }
+      expectWithin(fellowLength(low, high, h, fade), sum, { rel: 1e-5 });
+      expectWithin(fellowLength(low, high, h, 1e5), fellowLength(low, high, h), { rel: 1e-5 });
+    }
+    // Of 2 R / sin with its fading, where the sheet hides nothing: pi fade (1 - exp(-R / fade)).
+    expectWithin(fellowLength(0, 3e-3, 3, 1e-3), Math.PI * 1e-3 * (1 - Math.exp(-3)), { rel: 0.02 });
+  });
+
   test('share of lines with a tracer: few tracers 2 lambda h, many 1', () => {
     // Mean of h / c over crossing lines is 2 h.
     expectWithin(decoratedShare(1e-4), 2e-4, { rel: 0.01 });
