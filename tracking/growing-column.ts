@@ -1,3 +1,5 @@
+const ROOM_LEAST = 64;
+
 type Numbers = Uint8Array | Uint32Array | Float64Array;
 
 /** A column of numbers that grows as they come, in a tenth of the room that a list of objects takes. */
@@ -6,14 +8,20 @@ export class GrowingColumn<Column extends Numbers> {
   values: Column;
   length = 0;
 
-  /** @param make a column of that many zeros. */
-  constructor(private readonly make: (room: number) => Column) {
-    this.values = make(64);
+  /**
+   * @param make a column of that many zeros.
+   * @param room how many numbers are expected: with the right one nothing is copied, and no room stays empty.
+   */
+  constructor(
+    private readonly make: (room: number) => Column,
+    room = ROOM_LEAST,
+  ) {
+    this.values = make(Math.max(1, room));
   }
 
   push(value: number): void {
     if (this.length === this.values.length) {
-      const grown = this.make(Math.ceil(this.length * 1.5));
+      const grown = this.make(Math.ceil((this.length + 1) * 1.5));
       grown.set(this.values);
       this.values = grown;
     }
@@ -21,6 +29,6 @@ export class GrowingColumn<Column extends Numbers> {
   }
 }
 
-export const bytesColumn = () => new GrowingColumn((room) => new Uint8Array(room));
-export const countsColumn = () => new GrowingColumn((room) => new Uint32Array(room));
-export const numbersColumn = () => new GrowingColumn((room) => new Float64Array(room));
+export const bytesColumn = (room?: number) => new GrowingColumn((n) => new Uint8Array(n), room);
+export const countsColumn = (room?: number) => new GrowingColumn((n) => new Uint32Array(n), room);
+export const numbersColumn = (room?: number) => new GrowingColumn((n) => new Float64Array(n), room);

@@ -1,4 +1,4 @@
-import { closePairs, pairsOnce } from '../pairs/close-pairs';
+import { closePairs, partnersOf } from '../pairs/close-pairs';
 import type { Tracks } from '../types';
 import { pairMotion, type PairMotion } from './pair-motion';
 import { PairMotions } from './pair-motions';
@@ -43,14 +43,7 @@ export function lineGroups(
     REACH_DISTANCES * typicalPx,
     REACH_IMAGE_PART * Math.min(image.width, image.height),
   );
-  const motions = new PairMotions();
-  if (pool.tracks > 1) {
-    const meetings = closePairs(tracks, pool.chosen, image, reachPx, LOOK_EVERY);
-    for (const [trackA, trackB] of pairsOnce(meetings, tracks.count)) {
-      const motion = pairMotion(tracks, trackA, trackB, pool.driftPx);
-      if (motion) motions.push(motion);
-    }
-  }
+  const motions = pool.tracks > 1 ? motionsWithin(reachPx) : new PairMotions(0);
   const tells = (m: PairMotion) => m.telling && m.measured >= leastFrames;
   let wrongChance = 1;
   let told = false;
@@ -97,4 +90,20 @@ export function lineGroups(
     leastFrames,
     told,
   };
+
+  function motionsWithin(reach: number): PairMotions {
+    // Meetings are forgotten before motions are kept: of a long recording there are hundreds of thousands of each.
+    const { from, partner } = partnersOf(
+      closePairs(tracks, pool.chosen, image, reach, LOOK_EVERY),
+      tracks.count,
+    );
+    const found = new PairMotions(from[tracks.count]);
+    for (let a = 0; a < tracks.count; a++) {
+      for (let k = from[a]; k < from[a + 1]; k++) {
+        const motion = pairMotion(tracks, a, partner[k], pool.driftPx);
+        if (motion) found.push(motion);
+      }
+    }
+    return found;
+  }
 }

@@ -1,4 +1,4 @@
-import { bytesColumn, countsColumn, numbersColumn } from '../growing-column';
+import { bytesColumn, countsColumn, numbersColumn, type GrowingColumn } from '../growing-column';
 import type { PairMotion } from './pair-motion';
 
 const [TELLING, RIGID, RIGID_WHEN_TURNED] = [1, 2, 4];
@@ -8,15 +8,28 @@ const [TELLING, RIGID, RIGID_WHEN_TURNED] = [1, 2, 4];
  * fill the memory. Whoever walks over it gets one short-lived object after the other.
  */
 export class PairMotions implements Iterable<PairMotion> {
-  private readonly trackA = countsColumn();
-  private readonly trackB = countsColumn();
-  private readonly measured = countsColumn();
-  private readonly common = countsColumn();
-  private readonly dxPx = numbersColumn();
-  private readonly dyPx = numbersColumn();
-  private readonly together = numbersColumn();
-  private readonly asOne = numbersColumn();
-  private readonly flags = bytesColumn();
+  private readonly trackA: GrowingColumn<Uint32Array>;
+  private readonly trackB: GrowingColumn<Uint32Array>;
+  private readonly measured: GrowingColumn<Uint32Array>;
+  private readonly common: GrowingColumn<Uint32Array>;
+  private readonly dxPx: GrowingColumn<Float64Array>;
+  private readonly dyPx: GrowingColumn<Float64Array>;
+  private readonly together: GrowingColumn<Float64Array>;
+  private readonly asOne: GrowingColumn<Float64Array>;
+  private readonly flags: GrowingColumn<Uint8Array>;
+
+  /** @param room how many pairs there are at most. */
+  constructor(room: number) {
+    this.trackA = countsColumn(room);
+    this.trackB = countsColumn(room);
+    this.measured = countsColumn(room);
+    this.common = countsColumn(room);
+    this.dxPx = numbersColumn(room);
+    this.dyPx = numbersColumn(room);
+    this.together = numbersColumn(room);
+    this.asOne = numbersColumn(room);
+    this.flags = bytesColumn(room);
+  }
 
   get length(): number {
     return this.trackA.length;

@@ -132,11 +132,14 @@ export function closePairs(
   return meetings;
 }
 
-/** The pairs of tracks that meet, each once however often they do, by their first track. */
-export function* pairsOnce(
-  { trackA, trackB, length }: Meetings,
-  tracks: number,
-): Generator<readonly [trackA: number, trackB: number]> {
+/** Pairs of tracks by their first one: those of track a are `partner[from[a]] .. partner[from[a + 1] - 1]`. */
+export interface Partners {
+  from: Uint32Array;
+  partner: Uint32Array;
+}
+
+/** The pairs of tracks that meet, each once however often they do, in a third of the room that meetings take. */
+export function partnersOf({ trackA, trackB, length }: Meetings, tracks: number): Partners {
   const from = new Uint32Array(tracks + 1);
   for (let i = 0; i < length; i++) from[trackA.values[i] + 1]++;
   for (let a = 0; a < tracks; a++) from[a + 1] += from[a];
@@ -144,11 +147,16 @@ export function* pairsOnce(
   const place = from.slice();
   for (let i = 0; i < length; i++) partner[place[trackA.values[i]]++] = trackB.values[i];
   const metBy = new Int32Array(tracks).fill(-1);
-  for (let a = 0; a < tracks; a++) {
-    for (let k = from[a]; k < from[a + 1]; k++) {
+  let kept = 0;
+  for (let a = 0, k = 0; a < tracks; a++) {
+    const end = from[a + 1];
+    from[a] = kept;
+    for (; k < end; k++) {
       if (metBy[partner[k]] === a) continue;
       metBy[partner[k]] = a;
-      yield [a, partner[k]];
+      partner[kept++] = partner[k];
     }
   }
+  from[tracks] = kept;
+  return { from, partner };
 }

@@ -1,5 +1,5 @@
 import { expect, test } from 'vitest';
-import { closePairs, pairsOnce } from '@/tracking/pairs/close-pairs';
+import { closePairs, Meetings, partnersOf } from '@/tracking/pairs/close-pairs';
 import { fitMeeting } from '@/tracking/pairs/meeting-fit';
 import { separationAround } from '@/tracking/pairs/separation';
 import { createRandom } from '@/tracking/random';
@@ -153,6 +153,30 @@ test('two tracks that part for long enough meet anew, whenever that is', () => {
     });
     const meetings = closePairs(tracks, Uint8Array.of(1, 1), { width: 80, height: 40, frames }, 5);
     expect(meetings.length).toBe(expected);
-    expect([...pairsOnce(meetings, 2)]).toEqual(expected > 0 ? [[0, 1]] : []);
+    expect(pairsIn(meetings, 2)).toEqual(expected > 0 ? ['0 1'] : []);
   }
 });
+
+test('pairs that meet more than once are partners once', () => {
+  const random = createRandom(12);
+  for (let round = 0; round < 100; round++) {
+    const tracks = 2 + Math.floor(30 * random.uniform());
+    const meetings = new Meetings();
+    const expected = new Set<string>();
+    for (let k = Math.floor(200 * random.uniform()); k > 0; k--) {
+      const [a, b] = [0, 0].map(() => Math.floor(tracks * random.uniform())).sort((p, q) => p - q);
+      if (a === b) continue;
+      meetings.begin(a, b, k, 1);
+      expected.add(`${a} ${b}`);
+    }
+    expect(pairsIn(meetings, tracks).sort()).toEqual([...expected].sort());
+  }
+});
+
+function pairsIn(meetings: Meetings, tracks: number): string[] {
+  const { from, partner } = partnersOf(meetings, tracks);
+  const pairs: string[] = [];
+  for (let a = 0; a < tracks; a++)
+    for (let k = from[a]; k < from[a + 1]; k++) pairs.push(`${a} ${partner[k]}`);
+  return pairs;
+}
