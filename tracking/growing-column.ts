@@ -1,6 +1,6 @@
 const ROOM_LEAST = 64;
 
-type Numbers = Uint8Array | Uint32Array | Float64Array;
+type Numbers = Uint8Array | Uint32Array | Float32Array | Float64Array;
 
 /** A column of numbers that grows as they come, in a tenth of the room that a list of objects takes. */
 export class GrowingColumn<Column extends Numbers> {
@@ -32,3 +32,5 @@ export class GrowingColumn<Column extends Numbers> {
 export const bytesColumn = (room?: number) => new GrowingColumn((n) => new Uint8Array(n), room);
 export const countsColumn = (room?: number) => new GrowingColumn((n) => new Uint32Array(n), room);
 export const numbersColumn = (room?: number) => new GrowingColumn((n) => new Float64Array(n), room);
+/** Numbers of which seven digits are enough. */
+export const roundedColumn = (room?: number) => new GrowingColumn((n) => new Float32Array(n), room);

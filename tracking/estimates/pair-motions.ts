@@ -1,4 +1,4 @@
-import { bytesColumn, countsColumn, numbersColumn, type GrowingColumn } from '../growing-column';
+import { bytesColumn, countsColumn, roundedColumn, type GrowingColumn } from '../growing-column';
 import type { PairMotion } from './pair-motion';
 
 const [TELLING, RIGID, RIGID_WHEN_TURNED] = [1, 2, 4];
@@ -12,10 +12,10 @@ export class PairMotions implements Iterable<PairMotion> {
   private readonly trackB: GrowingColumn<Uint32Array>;
   private readonly measured: GrowingColumn<Uint32Array>;
   private readonly common: GrowingColumn<Uint32Array>;
-  private readonly dxPx: GrowingColumn<Float64Array>;
-  private readonly dyPx: GrowingColumn<Float64Array>;
-  private readonly together: GrowingColumn<Float64Array>;
-  private readonly asOne: GrowingColumn<Float64Array>;
+  private readonly dxPx: GrowingColumn<Float32Array>;
+  private readonly dyPx: GrowingColumn<Float32Array>;
+  private readonly together: GrowingColumn<Float32Array>;
+  private readonly asOne: GrowingColumn<Float32Array>;
   private readonly flags: GrowingColumn<Uint8Array>;
 
   /** @param room how many pairs there are at most. */
@@ -24,10 +24,10 @@ export class PairMotions implements Iterable<PairMotion> {
     this.trackB = countsColumn(room);
     this.measured = countsColumn(room);
     this.common = countsColumn(room);
-    this.dxPx = numbersColumn(room);
-    this.dyPx = numbersColumn(room);
-    this.together = numbersColumn(room);
-    this.asOne = numbersColumn(room);
+    this.dxPx = roundedColumn(room);
+    this.dyPx = roundedColumn(room);
+    this.together = roundedColumn(room);
+    this.asOne = roundedColumn(room);
     this.flags = bytesColumn(room);
   }
 
