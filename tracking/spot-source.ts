@@ -6,8 +6,12 @@ export interface SpotSource {
   count: number;
   /** First spot of each frame; one more than there are frames, the last being `count`. */
   frameStart: Uint32Array;
-  /** Spots `from .. to - 1`. They may be views of what is held: not to be changed. */
-  slice(from: number, to: number): Spots;
+  /**
+   * Spots `from .. to - 1`. They may be views of what is held: not to be changed.
+   *
+   * @param into what was asked for before and is no longer needed: its arrays may be filled anew.
+   */
+  slice(from: number, to: number, into?: Spots): Spots;
 }
 
 /** First spot in a frame of at least that number. */

@@ -40,9 +40,15 @@ const MICRO = 1e-6;
  * After these a process may keep much memory that it no longer uses: millions of small arrays leave its allocator with
  * room between what is still in use, which never goes back to the system.
  */
-const LEAVES_ROOM: readonly TaskName[] = ['linkTracks', 'judgeTracks', 'measureFlowPart', 'measureFlow'];
+const LEAVES_ROOM: readonly TaskName[] = [
+  'inspectStack',
+  'linkTracks',
+  'judgeTracks',
+  'measureFlowPart',
+  'measureFlow',
+];
 /** A process that has grown by more since its start, MB, is done with once such a task is over. */
-const GROWTH_MOST_MB = 64;
+const GROWTH_MOST_MB = 48;
 let startedMB = 0;
 const residentMB = (): number => process.memoryUsage.rss() / 2 ** 20;
 

@@ -58,12 +58,13 @@ export function openSpotFiles(paths: readonly string[], frames: number): SpotFil
     throw cause;
   }
   for (let f = 0; f < frames; f++) frameStart[f + 1] += frameStart[f];
-  return { count, frameStart, close, slice: (from, to) => readSpots(files, from, to) };
+  return { count, frameStart, close, slice: (from, to, into) => readSpots(files, from, to, into) };
 }
 
-function readSpots(files: readonly SpotFile[], from: number, to: number): Spots {
+function readSpots(files: readonly SpotFile[], from: number, to: number, into?: Spots): Spots {
   if (to - from > WINDOW_SPOTS) freeMemory();
-  const spots = emptySpots(to - from);
+  const spots =
+    into && into.frame.length >= to - from ? { ...into, count: to - from } : emptySpots(to - from);
   for (const { descriptor, first, count } of files) {
     const begin = Math.max(from, first);
     const end = Math.min(to, first + count);

@@ -145,13 +145,20 @@ class SpotPages {
   }
 
   private open(page: number): Spots {
-    const { held, source } = this;
-    const known = held.get(page);
-    const spots = known ?? source.slice(page * PAGE_SPOTS, Math.min(source.count, (page + 1) * PAGE_SPOTS));
+    const { held } = this;
+    const spots = held.get(page) ?? this.read(page);
     // The one used last stands at the end.
     held.delete(page);
     held.set(page, spots);
-    if (held.size > PAGES_HELD) held.delete(held.keys().next().value!);
     return spots;
+  }
+
+  /** Reads a page, where enough are held into the room of the one that was not used for longest: a long track needs all. */
+  private read(page: number): Spots {
+    const { held, source } = this;
+    const [oldest] = held.size < PAGES_HELD ? [] : held.keys();
+    const room = oldest === undefined ? undefined : held.get(oldest);
+    if (oldest !== undefined) held.delete(oldest);
+    return source.slice(page * PAGE_SPOTS, Math.min(source.count, (page + 1) * PAGE_SPOTS), room);
   }
 }

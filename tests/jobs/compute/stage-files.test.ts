@@ -8,7 +8,10 @@ import { linkTracks } from '@/jobs/compute/steps/link-tracks';
 import { readTrackFile, TrackFileWriter, tracksAt, writeTrackFile } from '@/jobs/compute/track-file';
 import { packTracks } from '@/tracking/corrections/pieces';
 import { linkSpots } from '@/tracking/link';
+import { assembleTracks, wholeTracks } from '@/tracking/linking/assemble-tracks';
+import { trackLinks } from '@/tracking/linking/track-links';
 import { createRandom } from '@/tracking/random';
+import { heldSpots } from '@/tracking/spot-source';
 import { createSpotSink, encodeSpots, sliceSpots } from '@/tracking/spots';
 import type { TrackSlice } from '@/tracking/track-slice';
 import type { Spots, Tracks } from '@/tracking/types';
@@ -92,11 +95,36 @@ test('any run of spots comes from files as it was written', async () => {
     const to = from + random.integer(spots.count - from + 1);
     const bytes = encodeSpots(source.slice(from, to));
     expect(Buffer.from(bytes).equals(encodeSpots(sliceSpots(spots, from, to)))).toBe(true);
+    // Into the room of others, which may be too small.
+    const other = random.integer(spots.count);
+    const room = source.slice(other, other + random.integer(spots.count - other + 1));
+    const again = source.slice(from, to, room);
+    expect(Buffer.from(encodeSpots(sliceSpots(again, 0, again.count))).equals(bytes)).toBe(true);
   }
   for (const frame of [0, 1, 1234, FRAMES - 1]) {
     expect(source.frameStart[frame]).toBe(spots.frame.findIndex((one) => one >= frame));
   }
   source.close();
+});
+
+test('tracks longer than what is held of the spots at once are put together from files all the same', async () => {
+  // 80 pages of spots, of which 64 are held; three tracks go through all of them.
+  const [frames, perFrame] = [3300, 100];
+  const sink = createSpotSink();
+  for (let f = 0; f < frames; f++)
+    for (let i = 0; i < perFrame; i++) sink.push(f, i + f / frames, i, 0.1, 0.2, 400 + i, 20, 0);
+  const many = sink.spots();
+  const before = Int32Array.from({ length: many.count }, (_, s) =>
+    s < perFrame || (s % perFrame > 2 && Math.floor(s / perFrame) % 40 === 0) ? -1 : s - perFrame,
+  );
+  const links = trackLinks(before);
+  const path = join(folder, 'many.bin');
+  await writeFile(path, encodeSpots(many));
+  const source = openSpotFiles([path], frames);
+  const got = wholeTracks(assembleTracks(source, links, 3));
+  source.close();
+  expectSameTracks(got, wholeTracks(assembleTracks(heldSpots(many, frames), links, 3)));
+  expect(got.count).toBe(3 + 97 * Math.ceil(frames / 40));
 });
 
 test('files out of order, of too many frames, cut short or of something else are told as such', async () => {
