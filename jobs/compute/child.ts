@@ -48,7 +48,7 @@ const LEAVES_ROOM: readonly TaskName[] = [
   'measureFlow',
 ];
 /** A process that has grown by more since its start, MB, is done with once such a task is over. */
-const GROWTH_MOST_MB = 48;
+const GROWTH_MOST_MB = 40;
 let startedMB = 0;
 const residentMB = (): number => process.memoryUsage.rss() / 2 ** 20;
 

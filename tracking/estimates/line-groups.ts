@@ -94,7 +94,7 @@ export function lineGroups(
   function motionsWithin(reach: number): PairMotions {
     // Meetings are forgotten before motions are kept: of a long recording there are hundreds of thousands of each.
     const { from, partner } = partnersOf(
-      closePairs(tracks, pool.chosen, image, reach, LOOK_EVERY),
+      closePairs(tracks, pool.chosen, image, reach, LOOK_EVERY, true),
       tracks.count,
     );
     const found = new PairMotions(from[tracks.count]);

@@ -20,6 +20,9 @@ export class Meetings implements Iterable<Meeting> {
   private readonly separationPx = numbersColumn();
   private readonly last = countsColumn();
 
+  /** @param pairsOnly true where nobody will ask when and how near they were: half the room. */
+  constructor(private readonly pairsOnly = false) {}
+
   get length(): number {
     return this.trackA.length;
   }
@@ -28,16 +31,18 @@ export class Meetings implements Iterable<Meeting> {
   begin(trackA: number, trackB: number, frame: number, separationPx: number): number {
     this.trackA.push(trackA);
     this.trackB.push(trackB);
-    this.frame.push(frame);
-    this.separationPx.push(separationPx);
     this.last.push(frame);
+    if (!this.pairsOnly) {
+      this.frame.push(frame);
+      this.separationPx.push(separationPx);
+    }
     return this.length - 1;
   }
 
   /** Takes up that the two are within reach in one more frame. */
   goOn(i: number, frame: number, separationPx: number): void {
     this.last.values[i] = frame;
-    if (separationPx >= this.separationPx.values[i]) return;
+    if (this.pairsOnly || separationPx >= this.separationPx.values[i]) return;
     this.separationPx.values[i] = separationPx;
     this.frame.values[i] = frame;
   }
@@ -46,7 +51,9 @@ export class Meetings implements Iterable<Meeting> {
     return this.last.values[i];
   }
 
+  /** @throws Error where only pairs were kept. */
   *[Symbol.iterator](): Generator<Meeting> {
+    if (this.pairsOnly) throw new Error('Of these meetings only the pairs were kept.');
     for (let i = 0; i < this.length; i++) {
       yield {
         trackA: this.trackA.values[i],
@@ -68,6 +75,7 @@ const NEW_MEETING_FRAMES = 20;
  * @param chosen 1 for tracks to look at.
  * @param reachPx > 0.
  * @param everyFrames only every so many frames are looked at.
+ * @param pairsOnly true where only `partnersOf` the meetings is wanted.
  */
 export function closePairs(
   tracks: Tracks,
@@ -75,6 +83,7 @@ export function closePairs(
   image: { width: number; height: number; frames: number },
   reachPx: number,
   everyFrames = 1,
+  pairsOnly = false,
 ): Meetings {
   if (!(reachPx > 0)) throw new RangeError(`reachPx must be > 0. Received ${reachPx}.`);
   // One ring of cells around the image takes positions that lie just outside.
@@ -87,7 +96,7 @@ export function closePairs(
     const row = Math.max(0, Math.min(rows - 1, 1 + Math.floor(tracks.yPx[p] / cellPx)));
     return row * columns + column;
   };
-  const meetings = new Meetings();
+  const meetings = new Meetings(pairsOnly);
   // Meetings that may go on, by pair: those of the frames before are forgotten when none of them may.
   let current = new Map<number, number>();
   let before = new Map<number, number>();

@@ -161,15 +161,17 @@ test('pairs that meet more than once are partners once', () => {
   const random = createRandom(12);
   for (let round = 0; round < 100; round++) {
     const tracks = 2 + Math.floor(30 * random.uniform());
-    const meetings = new Meetings();
+    const meetings = new Meetings(round % 2 === 0);
     const expected = new Set<string>();
-    for (let k = Math.floor(200 * random.uniform()); k > 0; k--) {
+    for (let k = 5 + Math.floor(200 * random.uniform()); k > 0; k--) {
       const [a, b] = [0, 0].map(() => Math.floor(tracks * random.uniform())).sort((p, q) => p - q);
       if (a === b) continue;
       meetings.begin(a, b, k, 1);
       expected.add(`${a} ${b}`);
     }
     expect(pairsIn(meetings, tracks).sort()).toEqual([...expected].sort());
+    if (round % 2 === 0) expect(() => [...meetings]).toThrow('only the pairs were kept');
+    else expect([...meetings].map(({ trackA, trackB }) => `${trackA} ${trackB}`)).toContain([...expected][0]);
   }
 });
 
