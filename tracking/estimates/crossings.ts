@@ -3,7 +3,7 @@ import { notUsable, type DensityResult } from './interval';
 import { errorBetween, type UntoldOn } from './fellows';
 import { widenForFewLines } from './line-spread';
 import { seenLines } from './seen-lines';
-import { sumError } from './shared-motion';
+import { sumOfSquares } from './shared-motion';
 import { lineDensityFromCrossings, spacingFromDensity } from './stereology';
 
 /** A sheet thicker than this part of the spacing is no plane that lines cross. */
@@ -50,12 +50,7 @@ export function crossingsEstimate(context: EstimateContext): DensityResult {
   // Lines come as a Poisson process, each for the share of the time that it is seen.
   const square = (on: UntoldOn) => {
     const bySeen = seen.influence(on);
-    return (
-      sumError(
-        nearest.present.map((of, l) => of / nearest.linesPerFrame - bySeen[l]),
-        [],
-      ) ** 2
-    );
+    return sumOfSquares(nearest.present.map((of, l) => of / nearest.linesPerFrame - bySeen[l]));
   };
   const error = Math.hypot(errorBetween(square), seen.untoldError);
   const thicker = seenLines(fellows.byLine, h * (1 + THICKNESS_ERROR))?.share ?? share;

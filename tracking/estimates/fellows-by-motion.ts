@@ -10,6 +10,7 @@ import type { LineGroups } from './line-groups';
 import { widenForFewLines } from './line-spread';
 import type { PairMotion } from './pair-motion';
 import { shareOnOneLine } from './share-on-one-line';
+import { sumOfSquares } from './shared-motion';
 import { fellowLength } from './sheet-geometry';
 import type { TrappedPool } from './trapped-pool';
 import type { UsedTracks } from './used-tracks';
@@ -57,7 +58,7 @@ export function fellowsByMotion(
   const byLine = { all: onLines(all), used: counted && onLines(counted) };
   const { tracers, pairs, untoldError } = byLine.all;
   // L goes as N^2 / P: what each line adds to its logarithm.
-  const square = (on: UntoldOn) => tracers.reduce((sum, n, i) => sum + (2 * n - pairs[on][i]) ** 2, 0);
+  const square = (on: UntoldOn) => sumOfSquares(tracers.map((n, i) => 2 * n - pairs[on][i]));
   return {
     tracersPerLengthM: all.perLengthM,
     lineDensityM2: densityOf(all),

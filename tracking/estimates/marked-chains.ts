@@ -6,7 +6,7 @@ import { RESOLVED_SPOT_SIZES } from './fellows';
 import { notUsable, type DensityResult } from './interval';
 import { widenForFewLines } from './line-spread';
 import { marksAndTracers, type MarkedRecording } from './marks-and-tracers';
-import { sumError } from './shared-motion';
+import { sumOfSquares } from './shared-motion';
 
 /** Fewer lines than this give no length that an interval could be told of. */
 const LINES_LEAST = 8;
@@ -97,7 +97,7 @@ export function markedChainsEstimate(
   return {
     method,
     valueM2: markedM2 / shareBetween,
-    statistical: widenForFewLines(sumError(part, []), weight),
+    statistical: widenForFewLines(Math.sqrt(sumOfSquares(part)), weight),
     systematic: Math.hypot(ANISOTROPY_ERROR, Math.log((shareThicker * (1 + THICKNESS_ERROR)) / shareBetween)),
     inputs: all,
     note: `Length of the lines that people marked from first tracer to last, in ${frames.length === 1 ? 'one frame' : `${frames.length} frames`}; what lies beyond is added (${percent} % lies between). Marks drawn further give too much.`,

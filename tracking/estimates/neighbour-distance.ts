@@ -3,7 +3,7 @@ import { notUsable, type DensityResult } from './interval';
 import { errorBetween, type UntoldOn } from './fellows';
 import { widenForFewLines } from './line-spread';
 import { seenLines } from './seen-lines';
-import { sumError } from './shared-motion';
+import { productsOf, sumOfSquares } from './shared-motion';
 import { lineDensityFromNeighbourDistance, neighbourDistance } from './stereology';
 
 /** Above this part of the spacing the thickness of the sheet matters more than a correction can mend. */
@@ -56,17 +56,10 @@ export function neighbourDistanceEstimate(context: EstimateContext): DensityResu
   const area = total(nearest.areaM2);
   // What each line adds to ln L beyond its share: ended distances over areas, those of neighbours being related.
   const byDistance = nearest.ended.map((of, l) => of / ended - nearest.areaM2[l] / area);
-  const ofNeighbours = sumError(byDistance, nearest.neighbours) ** 2 - sumError(byDistance, []) ** 2;
+  const ofNeighbours = productsOf(byDistance, nearest.neighbours);
   const square = (on: UntoldOn) => {
     const bySeen = seen.influence(on);
-    return (
-      ofNeighbours +
-      sumError(
-        byDistance.map((of, l) => of - bySeen[l]),
-        [],
-      ) **
-        2
-    );
+    return sumOfSquares(byDistance.map((of, l) => of - bySeen[l])) + ofNeighbours;
   };
   const error = Math.hypot(errorBetween(square), seen.untoldError);
   const thicker = seenLines(fellows.byLine, h * (1 + THICKNESS_ERROR))?.share ?? share;

@@ -2,22 +2,25 @@ import { numbersColumn, type GrowingColumn } from '../growing-column';
 import { keyOfLines } from './by-two-lines';
 import type { LineGroups } from './line-groups';
 
+/** Variance of a sum of independent parts. */
+export const sumOfSquares = (part: Float64Array): number => part.reduce((sum, of) => sum + of * of, 0);
+
 /**
  * Standard error of a sum of independent parts but for some pairs that may be related: squares and twice
  * the products of those pairs (Conley, J. Econometrics 92, 1 (1999)). Where the products would lower it,
  * it stays that of independent parts.
  *
  * @param part deviations, with mean 0 or of a Poisson process.
- * @param chance that a pair is related.
  */
-export function sumError(
-  part: Float64Array,
-  related: Iterable<readonly [number, number]>,
-  chance = 1,
-): number {
+export function sumError(part: Float64Array, related: Iterable<readonly [number, number]>): number {
+  return Math.sqrt(sumOfSquares(part) + productsOf(part, related));
+}
+
+/** What related pairs add to the variance of a sum of parts, never less than nothing. */
+export function productsOf(part: Float64Array, related: Iterable<readonly [number, number]>): number {
   let between = 0;
   for (const [a, b] of related) between += part[a] * part[b];
-  return Math.sqrt(part.reduce((sum, of) => sum + of * of, 0) + 2 * chance * Math.max(0, between));
+  return 2 * Math.max(0, between);
 }
 
 /**
