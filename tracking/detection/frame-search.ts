@@ -15,6 +15,8 @@ import { gainForLevel, levelForFalseMaxima } from './threshold';
 const FIT_REACH_SIGMAS = { full: 2.8, quick: 2.3 } as const;
 /** A step this small leaves an error far below the standard error of any spot that is found; well below it. */
 const STEP_DONE_PX = { full: 0.006, quick: 0.03 } as const;
+/** Fits move spots by less than this, px: others that far beyond their boxes of pixels never see their light. */
+const MOVED_MOST_PX = 1;
 /** Spots closer than this are fitted together. */
 const TOGETHER_SIGMAS = 5;
 /** The filter sees whole pixels only and weighs noise approximately; the fit then decides. */
@@ -97,7 +99,29 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
       const subX = x + subPixel(at, 1, x, width);
       table.add(subX, y + subPixel(at, width, y, height), brightness, response[at], sizes.typical);
     }
-    for (let i = 0; i < table.count; i++) fits.paint(table.x[i], table.y[i], table.n[i], sigma);
+  };
+
+  /** Light is painted where others may see it: those whose boxes of pixels overlap, or who are fitted together. */
+  const seenPx = Math.max(TOGETHER_SIGMAS * sigma, 2 * reach + MOVED_MOST_PX);
+
+  const paint = (i: number) => {
+    table.lone[i] = 0;
+    fits.paint(table.x[i], table.y[i], table.n[i], sizes.sigmaPx[table.size[i]]);
+  };
+
+  const paintSeen = () => {
+    for (let i = 0; i < table.count; i++) {
+      if (table.near(i, seenPx, near) === 0) table.lone[i] = 1;
+      else paint(i);
+    }
+  };
+
+  /** Lone spots that see one that was found beside another are lone no more. */
+  const paintNextTo = (fresh: number) => {
+    for (let i = 0; i < table.count; i++) {
+      if (table.lone[i] === 0 || table.alive[i] === 0) continue;
+      if (Math.hypot(table.x[i] - table.x[fresh], table.y[i] - table.y[fresh]) < seenPx) paint(i);
+    }
   };
 
   /** Vertex of the parabola through the response at a maximum and its two neighbours along an axis. */
@@ -114,6 +138,7 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
     let count = 1;
     members[0] = seed;
     table.group[seed] = seed;
+    if (table.lone[seed] === 1) return count;
     for (let k = 0; k < count && count < JOINT_SPOTS_MOST - 1; k++) {
       const found = table.near(members[k], TOGETHER_SIGMAS * sigma, near);
       for (let m = 0; m < found && count < JOINT_SPOTS_MOST - 1; m++) {
@@ -140,8 +165,8 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
   };
 
   const fitGroups = () => {
-    const cell = Math.max(TOGETHER_SIGMAS * sigma, 2 * reach + 1);
-    table.index(width, height, cell);
+    table.index(width, height, seenPx);
+    paintSeen();
     const found = table.count;
     const lookLevel = levelForFalseMaxima(
       recipe.falseSpotsPerFrame,
@@ -153,7 +178,7 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
     );
     const gainLeast = lookLevel * lookLevel;
     const byResponse = order.byResponse(table, found);
-    if (sizes.sigmaPx.length > 1 && lookTwice) fitOnce(byResponse, cell);
+    if (sizes.sigmaPx.length > 1 && lookTwice) fitOnce(byResponse);
     for (let k = 0; k < found; k++) {
       const seed = byResponse[k];
       if (table.group[seed] >= 0 || table.alive[seed] === 0) continue;
@@ -162,16 +187,18 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
       setOffsetSpread(seed);
       // A lone faint maximum must gain the likelihood that the level stands for.
       const aloneLeast = table.response[seed] > level + LEVEL_SURE ? 0 : gainForNoise(seed);
+      const before = table.count;
       fitter.fit(table, members, count, lookTwice, aloneLeast, gainLeast);
+      for (let fresh = before; fresh < table.count; fresh++) paintNextTo(fresh);
     }
-    if (lookTwice) refitNextToOthers(cell);
+    if (lookTwice) refitNextToOthers();
   };
 
   /**
    * Fits all groups once, so that every spot has its size: what a wide one sheds around a spot of typical size
    * would be taken for one more spot by the neighbours, whose turn is earlier.
    */
-  const fitOnce = (seeds: Int32Array, cell: number) => {
+  const fitOnce = (seeds: Int32Array) => {
     for (const seed of seeds) {
       if (table.group[seed] >= 0 || table.alive[seed] === 0) continue;
       const count = gather(seed);
@@ -179,17 +206,17 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
       fitter.fit(table, members, count, false, 0, 0);
     }
     table.group.fill(-1, 0, table.count);
-    table.index(width, height, cell);
+    table.index(width, height, seenPx);
   };
 
   /** Groups whose pixels hold light of groups that had their turn later are fitted again, now that those are known. */
-  const refitNextToOthers = (cell: number) => {
-    table.index(width, height, cell);
+  const refitNextToOthers = () => {
+    table.index(width, height, seenPx);
     if (refitted.length < table.count) refitted = new Uint8Array(2 * table.count);
     refitted.fill(0, 0, table.count);
     for (let i = 0; i < table.count; i++) {
       if (table.alive[i] === 0 || refitted[i] === 1) continue;
-      const found = table.near(i, 2 * reach + 1, near);
+      const found = table.lone[i] === 1 ? 0 : table.near(i, seenPx, near);
       let later = false;
       let count = 1;
       members[0] = i;
@@ -212,6 +239,7 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
       );
     }
     prepare(frame, frameIndex);
+    fits.clear();
     propose();
     fitGroups();
     table.index(width, height, TOGETHER_SIGMAS * sigma);
@@ -225,8 +253,8 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
     const i = table.add(xPx, yPx, light, response[at], sizes.typical);
     // Somebody sees it: it is not dropped as what likelihood alone would not have told from noise.
     table.toldApart[i] = 1;
-    fits.paint(table.x[i], table.y[i], table.n[i], sigma);
-    table.index(width, height, Math.max(TOGETHER_SIGMAS * sigma, 2 * reach + 1));
+    for (let k = 0; k < table.count; k++) if (k === i || (table.lone[k] === 1 && table.alive[k] === 1)) paint(k);
+    table.index(width, height, seenPx);
     table.group.fill(-1, 0, table.count);
     setOffsetSpread(i);
     fitter.fit(table, members, gather(i), false, 0, 0);

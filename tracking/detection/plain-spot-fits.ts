@@ -34,6 +34,18 @@ export function createPlainSpotFits(planes: PlainPlanes, options: SpotFitsOption
   const splitY = new Float64Array(JOINT_SPOTS_MOST);
   const measured: Elongation = { score: 0, splitX: 0, splitY: 0 };
   const { x, y, n, sx, sy, sn, sigma } = joint;
+  const fitted = new Float32Array(width * height);
+
+  /** Expected light of the loaded pixels with the spots of the fit made last; what lies around them is of no meaning. */
+  const paintFitted = () => {
+    for (let j = 0, k = 0; j < window.height; j++) {
+      const row = (window.y0 + j) * width + window.x0;
+      for (let i = 0; i < window.width; i++, k++) fitted[row + i] = window.fixed[k] - readVariance;
+    }
+    for (let k = 0; k < joint.count; k++) painter.paint(fitted, x[k], y[k], n[k], sigma[k]);
+    return fitted;
+  };
+
   return {
     x,
     y,
@@ -47,6 +59,7 @@ export function createPlainSpotFits(planes: PlainPlanes, options: SpotFitsOption
     centreX,
     centreY,
     sigma,
+    clear: () => model.set(bare),
     paint: (xPx, yPx, brightness, sigmaPx) => painter.paint(model, xPx, yPx, brightness, sigmaPx),
     load: (count) =>
       window.load(electrons, model, usable, width, height, readVariance, centreX, centreY, count, reach),
@@ -66,6 +79,6 @@ export function createPlainSpotFits(planes: PlainPlanes, options: SpotFitsOption
     },
     logLikelihood: () => joint.logLikelihood(window),
     significance: () => joint.significance(window),
-    look: () => secondLook.strongest(window, model, bare, width),
+    look: () => secondLook.strongest(window, paintFitted(), bare, width),
   };
 }

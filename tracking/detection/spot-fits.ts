@@ -33,9 +33,11 @@ export interface SpotFits {
   /** Standard deviations of the images that `run` assumes, px; those of typical spots to begin with. */
   readonly sigma: Float64Array;
 
-  /** Adds the light of a spot to the model of the frame, or takes it away again (negative brightness). */
+  /** Begins with a frame: its expected light is that of a frame without spots. */
+  clear(): void;
+  /** Adds the light of a spot to what is expected, or takes it away again (negative brightness). */
   paint(xPx: number, yPx: number, brightness: number, sigmaPx: number): void;
-  /** Takes the boxes around the first `count` centres. The model must not hold the spots to be fitted. */
+  /** Takes the boxes around the first `count` centres. The spots to be fitted must not be painted. */
   load(count: number): void;
   /**
    * Fits `count` spots and an offset of the background that is 0 +- `offsetSpreadE` electrons per pixel.
@@ -50,8 +52,8 @@ export interface SpotFits {
   /** Twice the gain in log-likelihood of the fit made last over a background without any spot. */
   significance(): number;
   /**
-   * The strongest peak in the loaded pixels of what the fit made last leaves; its spots must be painted
-   * again. The same object is reused.
+   * The strongest peak in the loaded pixels of what the fit made last leaves, whether its spots are painted
+   * again or not. The same object is reused.
    */
   look(): ResidualPeak;
 }

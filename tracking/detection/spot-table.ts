@@ -23,6 +23,8 @@ export class SpotTable {
   turn = new Int32Array(256);
   /** 1 where likelihood told it apart from a spot close by. */
   toldApart = new Uint8Array(256);
+  /** 1 while nobody is near enough to see its light, which then needn't be painted. */
+  lone = new Uint8Array(256);
   /** 0 once it turned out not to be a spot. */
   alive = new Uint8Array(256);
 
@@ -50,15 +52,17 @@ export class SpotTable {
     this.group[i] = -1;
     this.turn[i] = 0;
     this.toldApart[i] = 0;
+    this.lone[i] = 0;
     this.alive[i] = 1;
     return i;
   }
 
-  /** Sorts the spots present into cells, for `near`. Call again after spots were added. */
-  index(width: number, height: number, cellPx: number): void {
-    this.cellPx = cellPx;
-    this.columns = Math.max(1, Math.ceil(width / cellPx));
-    this.rows = Math.max(1, Math.ceil(height / cellPx));
+  /** Sorts the spots present into cells, for `near` to look as far as `reachPx`. Call again after spots were added. */
+  index(width: number, height: number, reachPx: number): void {
+    // About one spot in a cell: there is less to go through when there are few.
+    this.cellPx = Math.max(reachPx, Math.sqrt((width * height) / Math.max(1, this.count)));
+    this.columns = Math.max(1, Math.ceil(width / this.cellPx));
+    this.rows = Math.max(1, Math.ceil(height / this.cellPx));
     const cells = this.columns * this.rows;
     if (this.cellStart.length < cells + 1) this.cellStart = new Int32Array(cells + 1);
     if (this.cellSpots.length < this.count) this.cellSpots = new Int32Array(this.x.length);
@@ -75,7 +79,7 @@ export class SpotTable {
   }
 
   /**
-   * Living spots within `reachPx` (at most a cell) of a spot, itself left out, written to `found`.
+   * Living spots within `reachPx` (at most what `index` was told) of a spot, itself left out, written to `found`.
    *
    * @returns how many; what doesn't fit into `found` is left out.
    */
@@ -134,6 +138,7 @@ export class SpotTable {
     this.group = wider(new Int32Array(room), this.group);
     this.turn = wider(new Int32Array(room), this.turn);
     this.toldApart = wider(new Uint8Array(room), this.toldApart);
+    this.lone = wider(new Uint8Array(room), this.lone);
     this.alive = wider(new Uint8Array(room), this.alive);
   }
 }

@@ -48,8 +48,6 @@ export interface FramePlanes {
   readonly bad: Uint8Array;
   /** Filled by the caller, for all frames or for each: light without spots of the whole stack, electrons. */
   readonly background: Float32Array;
-  /** Starts as the expected light without spots, electrons; whoever knows of spots adds their light. */
-  readonly model: Float32Array;
   /** Noise of variance 1 in which a spot stands out the most. */
   readonly response: Float32Array;
   /** Expected light of a pixel without spots, electrons >= 0; known once there is a response. */
@@ -64,6 +62,7 @@ export interface PlainPlanes {
   /** 1 where a pixel counts. */
   readonly usable: Uint8Array;
   readonly bare: Float32Array;
+  /** Expected light with the spots that are known; kept by the fits. */
   readonly model: Float32Array;
 }
 
@@ -88,9 +87,8 @@ export interface FrameKernels extends FramePlanes {
   /** Light of the frame relative to `background`; see `measureLightLevel`. */
   lightLevel(readVariance: number): LightLevel;
   /**
-   * Fills `model` with the expected light without spots, max(0, scale * background + shift), and `response`,
-   * the frame in units of its own noise correlated with the spot. Bad pixels count as dark, saturated ones as
-   * bright as they look.
+   * Fills `response`, the frame in units of its own noise correlated with the spot; what is expected without spots
+   * is max(0, scale * background + shift). Bad pixels count as dark, saturated ones as bright as they look.
    */
   respond(light: LightLevel, readVariance: number): void;
   /**
@@ -107,7 +105,8 @@ export interface CompiledPlanes {
   readonly countsAt: number;
   readonly badAt: number;
   readonly backgroundAt: number;
-  readonly modelAt: number;
+  readonly spotLightAt: number;
+  readonly paintedAt: number;
   /** `scratchBytes` of the spec, on a multiple of 16. */
   readonly scratchAt: number;
 }

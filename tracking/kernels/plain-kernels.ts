@@ -49,7 +49,6 @@ function forImages({ width, height, spotSigmaPx }: ImageSpec): FrameKernels {
       const seen = usable[i] === 1 || electrons[i] >= saturationE;
       noise[i] = seen ? (electrons[i] - light) / Math.sqrt(light + floor) : 0;
     }
-    model.set(bare);
     filter.apply(noise, response);
   };
 
@@ -66,7 +65,6 @@ function forImages({ width, height, spotSigmaPx }: ImageSpec): FrameKernels {
     plain: { electrons, usable, bare, model },
     bad,
     background,
-    model,
     response,
     bareAt: (pixel) => bare[pixel],
     isUsable: (pixel) => usable[pixel] === 1,

@@ -50,7 +50,6 @@ export interface SimdExports {
     counts: number,
     bad: number,
     background: number,
-    model: number,
     response: number,
     width: number,
     height: number,
@@ -98,7 +97,8 @@ export interface SimdExports {
     counts: number,
     bad: number,
     background: number,
-    model: number,
+    spotLight: number,
+    painted: number,
     imageWidth: number,
     imageHeight: number,
     reach: number,
@@ -108,6 +108,7 @@ export interface SimdExports {
     readVariance: number,
     stepDone: number,
   ): number;
+  clearSpots(fit: number): void;
   paintSpot(fit: number, x: number, y: number, brightness: number, sigma: number): void;
   loadJointFitWindow(fit: number, count: number): void;
   runJointFit(fit: number, count: number, offsetSpread: number): number;

@@ -13,7 +13,10 @@ export interface SimdPlanes {
   bad: number;
   background: number;
   counts: number;
-  model: number;
+  /** f32 light of spots that were fitted. */
+  spotLight: number;
+  /** u8 per run of 64 pixels of a row: where that isn't all zeros. */
+  painted: number;
   response: number;
   /** f32, see `FrameFacts` in `assembly/counts.ts`. */
   facts: number;
@@ -63,7 +66,8 @@ export function reservePlanes(
     bad: bytes(pixels),
     background: floats(pixels),
     counts: floats(pixels),
-    model: floats(pixels),
+    spotLight: floats(pixels),
+    painted: bytes(Math.ceil(width / 64) * height),
     response: floats(pixels),
     facts: floats(FACTS),
     peaks: floats(peaksMost),

@@ -37,10 +37,11 @@ function both(width: number, height: number, spotSigmaPx = 1.2): Both {
   const frames: FrameKernels[] = [plainKernels.forImages(spec), kernels.forImages(spec)];
   const options = { width, height, spotSigmaPx, readVariance: READ_VARIANCE, reach, stepDonePx: 0.006 };
   if (!frames[1].compiled) throw new Error('The compiled kernels have no memory for images this small.');
+  const fits = frames.map((frame) => createSpotFits(frame, options, room));
   const painter = createSpotPainter(width, height, spotSigmaPx, Math.ceil(5 * spotSigmaPx));
   return {
-    plain: createSpotFits(frames[0], options, room),
-    simd: createSpotFits(frames[1], options, room),
+    plain: fits[0],
+    simd: fits[1],
     show(spots, random, uselessShare = 0) {
       const light = new Float32Array(width * height).fill(BACKGROUND_E);
       for (const { x, y, n } of spots) painter.paint(light, x, y, n);
@@ -54,6 +55,7 @@ function both(width: number, height: number, spotSigmaPx = 1.2): Both {
         frame.setFrame(counts, { offsetCounts: 0, perCount: 1, saturationCounts: Infinity });
         frame.respond({ scale: 1, shift: 0 }, READ_VARIANCE);
       }
+      for (const one of fits) one.clear();
     },
   };
 }

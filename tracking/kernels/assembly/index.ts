@@ -7,7 +7,7 @@ export { elongateJointFit } from './joint-fit-elongation';
 export { jointFitLikelihood, runJointFit } from './joint-fit';
 export { jointFitSignificance } from './joint-fit-significance';
 export { loadJointFitWindow } from './joint-fit-window';
-export { paintSpot } from './joint-fit-paint';
+export { clearSpots, paintSpot } from './joint-fit-paint';
 export { peakOfResidual } from './joint-fit-residual';
 export { setUpJointFit } from './joint-fit-set-up';
 export { gatherLight, lightSums } from './light-sums';

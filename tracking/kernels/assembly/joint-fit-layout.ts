@@ -41,11 +41,13 @@ export const SHARES: usize = 7296;
 /** What belongs to the images at hand and to the fit that was made last. */
 @unmanaged
 export class Settings {
-  // Planes of the image: f32, u8, f32, f32 per pixel.
+  // Planes of the image: f32, u8, f32 per pixel, and f32 light of the spots that were painted.
   counts: usize = 0;
   bad: usize = 0;
   background: usize = 0;
-  model: usize = 0;
+  spotLight: usize = 0;
+  /** u8, see `joint-fit-paint.ts`. */
+  painted: usize = 0;
   imageWidth: i32 = 0;
   imageHeight: i32 = 0;
   /** Boxes have `side` = 2 reach + 1 columns and rows; arrays of shares have room for `shareRoom` numbers. */

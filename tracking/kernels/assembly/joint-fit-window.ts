@@ -1,4 +1,4 @@
-import { electronsAt, goodAt } from './counts';
+import { electronsAt, goodAt, lightAt } from './counts';
 import { CENTRE_X, CENTRE_Y, settingsOf, Settings } from './joint-fit-layout';
 
 export function roundPx(value: f64): i32 {
@@ -8,7 +8,7 @@ export function roundPx(value: f64): i32 {
 /**
  * Loads what a joint fit looks at: boxes around the first `count` centres, as far as the image goes and the
  * room reaches. Data and fixed light have the read variance added, which makes them Poisson to good
- * approximation. The model must not hold the spots that are to be fitted.
+ * approximation. The spots that are to be fitted must not be painted.
  */
 export function loadJointFitWindow(fit: usize, count: i32): void {
   const s = settingsOf(fit);
@@ -36,6 +36,8 @@ export function loadJointFitWindow(fit: usize, count: i32): void {
   const offset = f32x4.splat(facts.offset);
   const perCount = f32x4.splat(facts.perCount);
   const saturation = f32x4.splat(facts.saturation);
+  const scale = f32x4.splat(facts.scale);
+  const dim = f32x4.splat(facts.shift);
   const width = i32x4.splat(s.width);
   const all = count === 1;
   for (let y: i32 = 0; y < s.height; y++) {
@@ -48,7 +50,9 @@ export function loadJointFitWindow(fit: usize, count: i32): void {
       const good = goodAt(s.bad + from + x, e);
       // What can't be used must be a number all the same: it is multiplied by 0.
       v128.store(s.data + at, f32x4.add(v128.and(e, good), shift));
-      v128.store(s.fixed + at, f32x4.add(v128.load(s.model + ((from + x) << 2)), shift));
+      const light = lightAt(s.background + ((from + x) << 2), scale, dim);
+      const spots = v128.load(s.spotLight + ((from + x) << 2));
+      v128.store(s.fixed + at, f32x4.add(f32x4.add(light, spots), shift));
       const usable = v128.and(v128.and(good, f32x4.lt(e, saturation)), i32x4.gt_s(width, place));
       v128.store(s.used + at, all ? usable : v128.and(usable, v128.load(s.used + at)));
       place = i32x4.add(place, i32x4.splat(4));

@@ -2,7 +2,7 @@ import { electronsAt, FrameFacts, goodAt, lightAt } from './counts';
 
 /**
  * A row of the frame in units of its own noise, (electrons - light) / sqrt(light + floor), where light is the
- * expected light without spots, which becomes `model`. Pixels that are bad or hold no finite number are 0.
+ * expected light without spots. Pixels that are bad or hold no finite number are 0.
  *
  * All arrays reach to the next multiple of 4 pixels; what stands there is written as well.
  *
@@ -13,7 +13,6 @@ export function noiseRow(
   counts: usize,
   bad: usize,
   background: usize,
-  model: usize,
   noise: usize,
   pixels: i32,
   floor: f32,
@@ -26,7 +25,6 @@ export function noiseRow(
   for (let i: usize = 0; i < <usize>pixels; i += 4) {
     const at = i << 2;
     const light = lightAt(background + at, scale, shift);
-    v128.store(model + at, light);
     const e = electronsAt(counts + at, offset, perCount);
     const value = f32x4.div(f32x4.sub(e, light), f32x4.sqrt(f32x4.add(light, floors)));
     v128.store(noise + at, v128.and(value, goodAt(bad + i, e)));

@@ -3,8 +3,8 @@ import { FrameFacts } from './counts';
 import { noiseRow } from './noise-row';
 
 /**
- * Writes down the facts of the frame, then fills `model` and the frame in units of its own noise (see
- * `noiseRow`), correlated with the spot along x and y. Rows are correlated along x into a band of rows that
+ * Writes down the facts of the frame, then fills `response`: the frame in units of its own noise (see `noiseRow`),
+ * correlated with the spot along x and y. Rows are correlated along x into a band of rows that
  * stays in the cache, and from there along y.
  *
  * @param facts address of `FrameFacts`
@@ -18,7 +18,6 @@ export function respond(
   counts: usize,
   bad: usize,
   background: usize,
-  model: usize,
   response: usize,
   width: i32,
   height: i32,
@@ -58,7 +57,7 @@ export function respond(
       if (next < height) {
         const at = <usize>next * <usize>width;
         const far = at << 2;
-        noiseRow(frame, counts + far, bad + at, background + far, model + far, first, width, floor);
+        noiseRow(frame, counts + far, bad + at, background + far, first, width, floor);
         memory.fill(behind, 0, behindBytes);
         correlateRow(first, weights, reach, correctionX, place, paddedWidth);
       } else {
