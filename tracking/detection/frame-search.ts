@@ -15,7 +15,7 @@ import { gainForLevel, levelForFalseMaxima } from './threshold';
 const FIT_REACH_SIGMAS = { full: 2.8, quick: 2.3 } as const;
 /** A step this small leaves an error far below the standard error of any spot that is found; well below it. */
 const STEP_DONE_PX = { full: 0.006, quick: 0.03 } as const;
-/** Fits move spots by less than this, px: others that far beyond their boxes of pixels never see their light. */
+/** Few fits move a spot farther than this. */
 const MOVED_MOST_PX = 1;
 /** Spots closer than this are fitted together. */
 const TOGETHER_SIGMAS = 5;
@@ -103,24 +103,31 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
 
   /** Light is painted where others may see it: those whose boxes of pixels overlap, or who are fitted together. */
   const seenPx = Math.max(TOGETHER_SIGMAS * sigma, 2 * reach + MOVED_MOST_PX);
+  /** From corner to corner. */
+  const farthestSeenPx = Math.SQRT2 * seenPx;
 
-  const paint = (i: number) => {
+  const paintLone = (i: number) => {
+    if (table.lone[i] === 0 || table.alive[i] === 0) return;
     table.lone[i] = 0;
     fits.paint(table.x[i], table.y[i], table.n[i], sizes.sigmaPx[table.size[i]]);
   };
 
-  const paintSeen = () => {
-    for (let i = 0; i < table.count; i++) {
-      if (table.near(i, seenPx, near) === 0) table.lone[i] = 1;
-      else paint(i);
+  /** Paints a spot and those around it if they see each other. */
+  const paintIfSeen = (i: number) => {
+    const found = table.near(i, farthestSeenPx, near);
+    for (let m = 0; m < found; m++) {
+      const j = near[m];
+      if (Math.abs(table.x[i] - table.x[j]) > seenPx || Math.abs(table.y[i] - table.y[j]) > seenPx) continue;
+      paintLone(i);
+      paintLone(j);
     }
   };
 
-  /** Lone spots that see one that was found beside another are lone no more. */
-  const paintNextTo = (fresh: number) => {
+  /** A second look sees as far as what it finds reaches: then all are painted. */
+  const paintSeen = () => {
     for (let i = 0; i < table.count; i++) {
-      if (table.lone[i] === 0 || table.alive[i] === 0) continue;
-      if (Math.hypot(table.x[i] - table.x[fresh], table.y[i] - table.y[fresh]) < seenPx) paint(i);
+      if (lookTwice) paintLone(i);
+      else paintIfSeen(i);
     }
   };
 
@@ -165,7 +172,7 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
   };
 
   const fitGroups = () => {
-    table.index(width, height, seenPx);
+    table.index(width, height, farthestSeenPx);
     paintSeen();
     const found = table.count;
     const lookLevel = levelForFalseMaxima(
@@ -187,9 +194,7 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
       setOffsetSpread(seed);
       // A lone faint maximum must gain the likelihood that the level stands for.
       const aloneLeast = table.response[seed] > level + LEVEL_SURE ? 0 : gainForNoise(seed);
-      const before = table.count;
       fitter.fit(table, members, count, lookTwice, aloneLeast, gainLeast);
-      for (let fresh = before; fresh < table.count; fresh++) paintNextTo(fresh);
     }
     if (lookTwice) refitNextToOthers();
   };
@@ -206,17 +211,17 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
       fitter.fit(table, members, count, false, 0, 0);
     }
     table.group.fill(-1, 0, table.count);
-    table.index(width, height, seenPx);
+    table.index(width, height, farthestSeenPx);
   };
 
   /** Groups whose pixels hold light of groups that had their turn later are fitted again, now that those are known. */
   const refitNextToOthers = () => {
-    table.index(width, height, seenPx);
+    table.index(width, height, farthestSeenPx);
     if (refitted.length < table.count) refitted = new Uint8Array(2 * table.count);
     refitted.fill(0, 0, table.count);
     for (let i = 0; i < table.count; i++) {
       if (table.alive[i] === 0 || refitted[i] === 1) continue;
-      const found = table.lone[i] === 1 ? 0 : table.near(i, seenPx, near);
+      const found = table.near(i, 2 * reach + 1, near);
       let later = false;
       let count = 1;
       members[0] = i;
@@ -253,8 +258,8 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
     const i = table.add(xPx, yPx, light, response[at], sizes.typical);
     // Somebody sees it: it is not dropped as what likelihood alone would not have told from noise.
     table.toldApart[i] = 1;
-    for (let k = 0; k < table.count; k++) if (k === i || (table.lone[k] === 1 && table.alive[k] === 1)) paint(k);
-    table.index(width, height, seenPx);
+    for (let k = 0; k < table.count; k++) paintLone(k);
+    table.index(width, height, farthestSeenPx);
     table.group.fill(-1, 0, table.count);
     setOffsetSpread(i);
     fitter.fit(table, members, gather(i), false, 0, 0);

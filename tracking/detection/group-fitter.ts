@@ -68,9 +68,10 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
 
   /** Adds the light of a group to what is expected, or takes it away; that of a lone spot is of no use to anybody. */
   const paintAll = (table: SpotTable, members: Int32Array, count: number, sign: number) => {
-    if (count === 1 && table.lone[members[0]] === 1) return;
     for (let k = 0; k < count; k++) {
       const i = members[k];
+      if (table.lone[i] === 1 && (count === 1 || sign < 0)) continue;
+      table.lone[i] = 0;
       joint.paint(table.x[i], table.y[i], sign * table.n[i], sizes.sigmaPx[table.size[i]]);
     }
   };
@@ -210,8 +211,6 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
       table.elongationAsOne[fresh] = Math.max(table.elongationAsOne[fresh], table.elongation[i]);
     }
     members[count] = fresh;
-    // The fresh spot's light is painted, and then so must be that of the one beside it.
-    table.lone[members[0]] = 0;
   };
 
   /** Starts from the members as they are and one more of typical size. */

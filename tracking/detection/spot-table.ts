@@ -23,7 +23,7 @@ export class SpotTable {
   turn = new Int32Array(256);
   /** 1 where likelihood told it apart from a spot close by. */
   toldApart = new Uint8Array(256);
-  /** 1 while nobody is near enough to see its light, which then needn't be painted. */
+  /** 1 while its light isn't painted, since nobody is near enough to see it. */
   lone = new Uint8Array(256);
   /** 0 once it turned out not to be a spot. */
   alive = new Uint8Array(256);
@@ -52,7 +52,7 @@ export class SpotTable {
     this.group[i] = -1;
     this.turn[i] = 0;
     this.toldApart[i] = 0;
-    this.lone[i] = 0;
+    this.lone[i] = 1;
     this.alive[i] = 1;
     return i;
   }

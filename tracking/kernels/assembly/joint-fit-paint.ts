@@ -18,7 +18,7 @@ export function clearSpots(fit: usize): void {
       store<u8>(marks + run, 0);
       const left = run << RUN_BITS;
       const pixels = min(64, s.imageWidth - left);
-      memory.fill(s.spotLight + (<usize>(y * s.imageWidth + left) << 2), 0, <usize>pixels << 2);
+      memory.fill(s.spotLight + ((<usize>(y * s.imageWidth + left)) << 2), 0, (<usize>pixels) << 2);
     }
   }
 }
