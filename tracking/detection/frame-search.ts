@@ -106,9 +106,9 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
   /** From corner to corner. */
   const farthestSeenPx = Math.SQRT2 * seenPx;
 
-  const paintLone = (i: number) => {
-    if (table.lone[i] === 0 || table.alive[i] === 0) return;
-    table.lone[i] = 0;
+  const ensurePainted = (i: number) => {
+    if (table.unpainted[i] === 0 || table.alive[i] === 0) return;
+    table.unpainted[i] = 0;
     fits.paint(table.x[i], table.y[i], table.n[i], sizes.sigmaPx[table.size[i]]);
   };
 
@@ -118,15 +118,15 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
     for (let m = 0; m < found; m++) {
       const j = near[m];
       if (Math.abs(table.x[i] - table.x[j]) > seenPx || Math.abs(table.y[i] - table.y[j]) > seenPx) continue;
-      paintLone(i);
-      paintLone(j);
+      ensurePainted(i);
+      ensurePainted(j);
     }
   };
 
   /** A second look sees as far as what it finds reaches: then all are painted. */
   const paintSeen = () => {
     for (let i = 0; i < table.count; i++) {
-      if (lookTwice) paintLone(i);
+      if (lookTwice) ensurePainted(i);
       else paintIfSeen(i);
     }
   };
@@ -145,7 +145,8 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
     let count = 1;
     members[0] = seed;
     table.group[seed] = seed;
-    if (table.lone[seed] === 1) return count;
+    // Nobody is near.
+    if (table.unpainted[seed] === 1) return count;
     for (let k = 0; k < count && count < JOINT_SPOTS_MOST - 1; k++) {
       const found = table.near(members[k], TOGETHER_SIGMAS * sigma, near);
       for (let m = 0; m < found && count < JOINT_SPOTS_MOST - 1; m++) {
@@ -258,7 +259,7 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
     const i = table.add(xPx, yPx, light, response[at], sizes.typical);
     // Somebody sees it: it is not dropped as what likelihood alone would not have told from noise.
     table.toldApart[i] = 1;
-    for (let k = 0; k < table.count; k++) paintLone(k);
+    for (let k = 0; k < table.count; k++) ensurePainted(k);
     table.index(width, height, farthestSeenPx);
     table.group.fill(-1, 0, table.count);
     setOffsetSpread(i);

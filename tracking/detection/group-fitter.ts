@@ -66,12 +66,12 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
   const widest = { split: -1, splitX: 0, splitY: 0 };
   let offsetSpreadE = 1;
 
-  /** Adds the light of a group to what is expected, or takes it away; that of a lone spot is of no use to anybody. */
+  /** Adds the light of a group to what is expected, or takes it away; that of a spot that nobody sees stays unpainted. */
   const paintAll = (table: SpotTable, members: Int32Array, count: number, sign: number) => {
     for (let k = 0; k < count; k++) {
       const i = members[k];
-      if (table.lone[i] === 1 && (count === 1 || sign < 0)) continue;
-      table.lone[i] = 0;
+      if (table.unpainted[i] === 1 && (count === 1 || sign < 0)) continue;
+      table.unpainted[i] = 0;
       joint.paint(table.x[i], table.y[i], sign * table.n[i], sizes.sigmaPx[table.size[i]]);
     }
   };

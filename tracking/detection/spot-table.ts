@@ -23,8 +23,8 @@ export class SpotTable {
   turn = new Int32Array(256);
   /** 1 where likelihood told it apart from a spot close by. */
   toldApart = new Uint8Array(256);
-  /** 1 while its light isn't painted, since nobody is near enough to see it. */
-  lone = new Uint8Array(256);
+  /** 1 while its light isn't painted, as long as nobody is near enough to see it. */
+  unpainted = new Uint8Array(256);
   /** 0 once it turned out not to be a spot. */
   alive = new Uint8Array(256);
 
@@ -52,7 +52,7 @@ export class SpotTable {
     this.group[i] = -1;
     this.turn[i] = 0;
     this.toldApart[i] = 0;
-    this.lone[i] = 1;
+    this.unpainted[i] = 1;
     this.alive[i] = 1;
     return i;
   }
@@ -138,7 +138,7 @@ export class SpotTable {
     this.group = wider(new Int32Array(room), this.group);
     this.turn = wider(new Int32Array(room), this.turn);
     this.toldApart = wider(new Uint8Array(room), this.toldApart);
-    this.lone = wider(new Uint8Array(room), this.lone);
+    this.unpainted = wider(new Uint8Array(room), this.unpainted);
     this.alive = wider(new Uint8Array(room), this.alive);
   }
 }

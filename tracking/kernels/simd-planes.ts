@@ -5,6 +5,8 @@ import type { Arena } from './arena';
 const SLACK_BYTES = 64;
 /** Numbers in `FrameFacts`. */
 const FACTS = 5;
+/** Pixels of a row that share a mark of being painted; as in `assembly/joint-fit-paint.ts`. */
+const PAINTED_RUN = 64;
 /** Rows that are correlated before the next ones are fetched: few enough to stay in the cache. */
 const BAND_ROWS = 32;
 
@@ -15,7 +17,7 @@ export interface SimdPlanes {
   counts: number;
   /** f32 light of spots that were fitted. */
   spotLight: number;
-  /** u8 per run of 64 pixels of a row: where that isn't all zeros. */
+  /** u8 per run of pixels of a row: where that isn't all zeros. */
   painted: number;
   response: number;
   /** f32, see `FrameFacts` in `assembly/counts.ts`. */
@@ -67,7 +69,7 @@ export function reservePlanes(
     background: floats(pixels),
     counts: floats(pixels),
     spotLight: floats(pixels),
-    painted: bytes(Math.ceil(width / 64) * height),
+    painted: bytes(Math.ceil(width / PAINTED_RUN) * height),
     response: floats(pixels),
     facts: floats(FACTS),
     peaks: floats(peaksMost),

@@ -4,7 +4,7 @@ import type { SpotFits } from '@/tracking/detection/spot-fits';
 import { createSpotPainter } from '@/tracking/detection/spot-painter';
 import { jointFitRoom } from '@/tracking/kernels/joint-fit-memory';
 import { createSpotFits } from '@/tracking/kernels/create-spot-fits';
-import type { FrameKernels } from '@/tracking/kernels/kernels';
+import type { CompiledPlanes, FrameKernels, PlainPlanes } from '@/tracking/kernels/kernels';
 import { plainKernels } from '@/tracking/kernels/plain-kernels';
 import { createRandom, type Random } from '@/tracking/random';
 
@@ -24,6 +24,8 @@ interface Place {
 interface Both {
   plain: SpotFits;
   simd: SpotFits;
+  /** What the fits paint on. */
+  planes: { plain: PlainPlanes; compiled: CompiledPlanes };
   /** Sets the frame of both: noise on the light of the spots; pixels without use by chance. */
   show(spots: Place[], random: Random, uselessShare?: number): void;
 }
@@ -42,6 +44,7 @@ function both(width: number, height: number, spotSigmaPx = 1.2): Both {
   return {
     plain: fits[0],
     simd: fits[1],
+    planes: { plain: frames[0].plain!, compiled: frames[1].compiled },
     show(spots, random, uselessShare = 0) {
       const light = new Float32Array(width * height).fill(BACKGROUND_E);
       for (const { x, y, n } of spots) painter.paint(light, x, y, n);
@@ -227,5 +230,39 @@ describe('compiled fits say the same of what they fitted', () => {
       expect([a.xPx, a.yPx]).toEqual([b.xPx, b.yPx]);
       expect(Math.abs(a.brightness / b.brightness - 1)).toBeLessThan(0.02);
     });
+  });
+});
+
+describe('light of spots', () => {
+  // Widths around runs of 64 pixels, by which the plane is cleared.
+  test.each([
+    [20, 12],
+    [63, 20],
+    [64, 20],
+    [65, 20],
+    [150, 33],
+  ])('on %d x %d px is painted as the plain fits do, and is gone in the next frame', (width, height) => {
+    const pair = both(width, height);
+    const random = createRandom(width);
+    pair.show([], random);
+    const { plain, compiled } = pair.planes;
+    const { exports, spotLightAt } = compiled;
+    const spotLight = new Float32Array(exports.memory.buffer, spotLightAt, width * height);
+    const spots = Array.from({ length: 60 }, () => ({
+      // Some reach over the border, or stand beyond it.
+      x: (width + 8) * random.uniform() - 4,
+      y: (height + 8) * random.uniform() - 4,
+      n: 50 + 500 * random.uniform(),
+    }));
+    for (const fits of [pair.plain, pair.simd]) for (const { x, y, n } of spots) fits.paint(x, y, n, 1.2);
+    const worst = spotLight.reduce(
+      (most, light, i) => Math.max(most, Math.abs(light - (plain.model[i] - plain.bare[i]))),
+      0,
+    );
+    expect(Math.max(...spotLight)).toBeGreaterThan(20);
+    expect(worst).toBeLessThan(1e-3);
+    pair.show([], random);
+    expect(spotLight.every((light) => light === 0)).toBe(true);
+    expect(plain.model).toEqual(plain.bare);
   });
 });

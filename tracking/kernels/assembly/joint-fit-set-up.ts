@@ -4,7 +4,8 @@ import { SPOTS_MOST, settingsOf, shareAt } from './joint-fit-layout';
 /**
  * Tells the joint fits whose memory starts at `fit` (zeros so far) which image they work on.
  *
- * @param facts address of `FrameFacts` @param counts, bad, background, spotLight addresses of the planes @param painted u8 per run of 64 pixels of a row
+ * @param facts address of `FrameFacts` @param counts, bad, background, spotLight addresses of the planes
+ * @param painted u8 per run of 64 pixels of a row, see `joint-fit-paint.ts`
  * @param reach boxes have 2 reach + 1 columns and rows @param windowMost columns and rows that a window has at most, a multiple of 4
  * @param tapReach the residual filter has taps at distance 0 .. tapReach
  * @returns address of the taps, f32, for the caller to fill.
