@@ -35,6 +35,8 @@ export interface PlacedSpot {
   found: boolean;
 }
 
+/** After so many frames whatever a detector does often is compiled. */
+const FRAMES_TO_COMPILE = 4;
 /** Light that a person points to counts from this many of its standard errors on. */
 const POINTED_SIGMAS_LEAST = 2;
 
@@ -59,8 +61,11 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
     return alive[i] === 1 && inside && sx[i] < Infinity && sy[i] < Infinity;
   };
 
+  let framesSeen = 0;
   const detect: Detector['detect'] = (frame, frameIndex, sink) => {
     search(frame, frameIndex);
+    // Only what has run holds on to what was compiled.
+    if (++framesSeen === FRAMES_TO_COMPILE) keepCompiled('detector', detector);
     const { x, y, sx, sy, sn, n, response: snr, doubtX, doubtY } = table;
     for (const i of order.byPlace(table)) {
       if (!isSpot(i)) continue;
@@ -98,5 +103,6 @@ export function createDetector(model: ImageModel, recipe: Recipe, kernels: Kerne
     return isSpot(i) && certain && away(i) <= reachPx ? placed(i, false) : null;
   };
 
-  return keepCompiled('detector', { detect, placeAt });
+  const detector: Detector = { detect, placeAt };
+  return detector;
 }

@@ -72,7 +72,7 @@ export function measureImage(
   const camera = measureCameraNoise(quietPixels, statistics, request);
   const { meanE, drift } = fitBackground(statistics, camera, frameNumbers && pairNumbers(frameNumbers));
   const backgroundE = interpolateBlocks(meanE, statistics.grid);
-  for (let i = 0; i < backgroundE.length; i++) if (backgroundE[i] < 0) backgroundE[i] = 0;
+  raiseToZero(backgroundE);
   const { sums, level } = quietPixels;
   const noise = pixelNoise(backgroundE, camera);
   const badPixels = findBadPixels(sums, noise, statistics.pairs, frames.length, width, height);
@@ -97,6 +97,11 @@ export function measureImage(
   model.spotSigmaPx = typeof request.spotSizePx === 'number' ? request.spotSizePx : size.sigmaPx;
   model.spotSigmaSpreadPx = size.spreadPx;
   return model;
+}
+
+/** Straight lines carried on to the border may fall below no light at all. */
+function raiseToZero(values: Float32Array): void {
+  for (let i = 0; i < values.length; i++) if (values[i] < 0) values[i] = 0;
 }
 
 function checkFrames(frames: readonly Frame[], frameNumbers: readonly number[] | null): void {

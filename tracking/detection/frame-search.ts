@@ -70,7 +70,7 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
   const stepDonePx = STEP_DONE_PX[recipe.effort];
   const fitsOptions = { width, height, spotSigmaPx: sigma, readVariance, reach, stepDonePx };
   const fits = createSpotFits(pictures, fitsOptions, room);
-  const fitter = createGroupFitter({ ...fitsOptions, sizes, bareAt: pictures.bareAt }, fits);
+  const fitter = createGroupFitter({ ...fitsOptions, sizes, pictures }, fits);
   const table = new SpotTable();
   let refitted = new Uint8Array(256);
   const near = new Int32Array(64);

@@ -1,3 +1,4 @@
+import type { FramePlanes } from '../kernels/kernels';
 import { JOINT_SPOTS_MOST } from './fit-work';
 import { BESIDE_SIGMAS, MERGED_SIGMAS, chanceOfTwo, gainWanted } from './one-or-two';
 import { DARK_VARIANCE_E2 } from './second-look';
@@ -14,8 +15,8 @@ export interface GroupFitterOptions {
   readVariance: number;
   /** Sizes that spots may have. */
   sizes: SpotSizes;
-  /** Expected light without spots of a pixel of the frame at hand, electrons. */
-  bareAt(pixel: number): number;
+  /** The frame at hand. */
+  pictures: Pick<FramePlanes, 'bareAt'>;
 }
 
 /** A spot of a group whose brightness is not this many standard errors above 0 is dropped. */
@@ -54,7 +55,7 @@ export interface GroupFitter {
 }
 
 export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits): GroupFitter {
-  const { width, height, spotSigmaPx, readVariance, sizes, bareAt } = options;
+  const { width, height, spotSigmaPx, readVariance, sizes, pictures } = options;
   const { squares } = createSpotKernel(spotSigmaPx);
   const bestX = new Float64Array(JOINT_SPOTS_MOST);
   const bestY = new Float64Array(JOINT_SPOTS_MOST);
@@ -80,7 +81,8 @@ export function createGroupFitter(options: GroupFitterOptions, joint: SpotFits):
   const responseTo = (xPx: number, yPx: number, brightnessE: number) => {
     const x = Math.max(0, Math.min(width - 1, Math.round(xPx)));
     const y = Math.max(0, Math.min(height - 1, Math.round(yPx)));
-    return (brightnessE * squares) / Math.sqrt(bareAt(y * width + x) + readVariance + DARK_VARIANCE_E2);
+    const variance = pictures.bareAt(y * width + x) + readVariance + DARK_VARIANCE_E2;
+    return (brightnessE * squares) / Math.sqrt(variance);
   };
 
   const start = (table: SpotTable, members: Int32Array, count: number) => {

@@ -80,7 +80,8 @@ function meanOverTime(levelE: Float64Array, pixels: Float64Array, blocks: number
     weight[i % blocks] += pixels[i];
   }
   // NaN where no frame shows the block.
-  return sum.map((value, b) => value / weight[b]);
+  for (let b = 0; b < blocks; b++) sum[b] /= weight[b];
+  return sum;
 }
 
 /** Divides every pair's levels by its brightness relative to the mean; subtracts it in the dark. */

@@ -42,38 +42,38 @@ export function blockStatistics({
   };
   const levels = blockMeans(level, grid);
   const sums = new Float64Array(BLOCK_SUMS * blocks);
-  pairs.forEach((pair, p) => {
-    kernels.sumBlocks(pair, shifts[p], quiet[p], grid, sums);
+  for (let p = 0; p < pairs.length; p++) {
+    kernels.sumBlocks(pairs[p], shifts[p], quiet[p], grid, sums);
     const shift = 0.5 * (shifts[p][0] + shifts[p][1]);
     for (let b = 0; b < blocks; b++) {
-      const from = b * BLOCK_SUMS;
-      const n = sums[from + BlockSum.pixels];
-      if (n === 0) continue;
-      const at = p * blocks + b;
-      const meanA = sums[from + BlockSum.sumA] / n;
-      const meanB = sums[from + BlockSum.sumB] / n;
-      out.pixels[at] = n;
-      out.level[at] = levels[b] + shift + 0.5 * (meanA + meanB);
-      out.noiseSum[at] = 0.5 * (sums[from + BlockSum.differences2] - n * (meanA - meanB) ** 2);
-      if (n < 3) continue;
-      out.thirdSum[at] = thirdAboutMean(
-        n,
-        meanA,
-        sums[from + BlockSum.squaresA],
-        sums[from + BlockSum.cubesA],
-      );
-      out.thirdCount[at] = n;
-      if (pair.alone) continue;
-      out.thirdSum[at] += thirdAboutMean(
-        n,
-        meanB,
-        sums[from + BlockSum.squaresB],
-        sums[from + BlockSum.cubesB],
-      );
-      out.thirdCount[at] += n;
+      takeBlock(sums, b * BLOCK_SUMS, levels[b] + shift, pairs[p].alone, out, p * blocks + b);
     }
-  });
+  }
   return out;
+}
+
+/** Statistics of one block of one pair from its sums, which begin at `from` and are about `level`. */
+function takeBlock(
+  sums: Float64Array,
+  from: number,
+  level: number,
+  alone: boolean,
+  out: BlockStatistics,
+  at: number,
+): void {
+  const n = sums[from + BlockSum.pixels];
+  if (n === 0) return;
+  const meanA = sums[from + BlockSum.sumA] / n;
+  const meanB = sums[from + BlockSum.sumB] / n;
+  out.pixels[at] = n;
+  out.level[at] = level + 0.5 * (meanA + meanB);
+  out.noiseSum[at] = 0.5 * (sums[from + BlockSum.differences2] - n * (meanA - meanB) ** 2);
+  if (n < 3) return;
+  out.thirdSum[at] = thirdAboutMean(n, meanA, sums[from + BlockSum.squaresA], sums[from + BlockSum.cubesA]);
+  out.thirdCount[at] = n;
+  if (alone) return;
+  out.thirdSum[at] += thirdAboutMean(n, meanB, sums[from + BlockSum.squaresB], sums[from + BlockSum.cubesB]);
+  out.thirdCount[at] += n;
 }
 
 /** Sum of third powers about the mean, raised by what the sample's own mean takes from it. */

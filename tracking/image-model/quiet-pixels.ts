@@ -53,7 +53,7 @@ export function findQuietPixels(frames: readonly Frame[], kernels: PairKernels):
   const shifts: PairShifts[] = [];
   const quiet = pairs.map((pair, p) => {
     kernels.paintLevel(rough.levels[p], rough.grid);
-    rough.levels[p].forEach((value, b) => (meanLevel[b] += value / pairs.length));
+    for (let b = 0; b < meanLevel.length; b++) meanLevel[b] += rough.levels[p][b] / pairs.length;
     const shift = medianShift(pair.first.counts, level);
     shifts.push([shift, pair.alone ? shift : medianShift(pair.second.counts, level)]);
     return kernels.scan(pair, shifts[p]);

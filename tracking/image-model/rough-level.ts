@@ -103,8 +103,10 @@ function levelAt(tables: readonly Float64Array[], pair: number, pairs: number): 
   if (tables.length === 1) return tables[0];
   const at = ((pair + 0.5) * tables.length) / pairs - 0.5;
   const k = Math.min(tables.length - 2, Math.max(0, Math.floor(at)));
-  const after = tables[k + 1];
-  return tables[k].map((level, b) => level + (at - k) * (after[b] - level));
+  const [before, after] = [tables[k], tables[k + 1]];
+  const level = new Float64Array(before.length);
+  for (let b = 0; b < level.length; b++) level[b] = before[b] + (at - k) * (after[b] - before[b]);
+  return level;
 }
 
 /** Every other pixel of a few rows of a block, other rows in each frame; those without a number are left out. */

@@ -99,7 +99,7 @@ export function spotFrames(
         frame = respond(images, index);
         return noiseImage(images, frame, inElectrons, readVariance);
       },
-      bareAt: images.bareAt,
+      bareAt: (pixel) => images.bareAt(pixel),
       cut: (pixel, reachPx) => cutWindow(images, frame, inElectrons, pixel, reachPx),
     };
   };

@@ -3,7 +3,7 @@ import type { FramePair } from '../image-model/frame-pairs';
 import { binGrid, SUSPECT_REACH_BINS, type ScanSums } from '../image-model/pair-scan';
 import { Arena } from './arena';
 import type { PairKernels } from './pair-kernels';
-import { createSimdPainter } from './simd-painter';
+import { SimdPainter } from './simd-painter';
 import type { SimdExports } from './simd-exports';
 
 /** Kernels work on 16 pixels at a time and may touch so many bytes behind a plane's last pixel. */
@@ -111,12 +111,12 @@ export function simdPairs(simd: SimdExports, width: number, height: number): Pai
     out.set(arena.doubles(at.blockSums, BLOCK_SUMS * columns * rows));
   };
 
-  const paint = createSimdPainter(simd, arena, at.blockRows, paddedWidth, width, height);
+  const painter = new SimdPainter(simd, arena, at.blockRows, paddedWidth, width, height);
   return {
     level: arena.floats(at.level, pixels),
     suspect: arena.floats(at.suspect, bins),
     sums,
-    paintLevel: (blocks, blockGrid) => paint(blocks, blockGrid, -Infinity, at.level),
+    paintLevel: (blocks, { columns, rows }) => painter.paint(blocks, columns, rows, -Infinity, at.level),
     scan,
     sumBlocks,
   };

@@ -44,17 +44,24 @@ export function assembleTracks(
     lengths.push(length);
     points += length;
   }
-  function* pieces(): Generator<Tracks> {
-    const pages = new SpotPages(source);
-    for (let from = 0, to = 0; from < firsts.length; from = to) {
-      let room = 0;
-      while (to < firsts.length && (to === from || room + lengths[to] <= PIECE_POINTS)) room += lengths[to++];
-      const tracks = emptyTracks(lengths.slice(from, to), room);
-      for (let i = from; i < to; i++) fill(tracks, tracks.start[i - from], pages, after, firsts[i]);
-      yield tracks;
-    }
-  }
+  const pieces = () => assemblePieces(source, after, firsts, lengths);
   return { count: firsts.length, points, pieces };
+}
+
+function* assemblePieces(
+  source: SpotSource,
+  after: Int32Array,
+  firsts: readonly number[],
+  lengths: readonly number[],
+): Generator<Tracks> {
+  const pages = new SpotPages(source);
+  for (let from = 0, to = 0; from < firsts.length; from = to) {
+    let room = 0;
+    while (to < firsts.length && (to === from || room + lengths[to] <= PIECE_POINTS)) room += lengths[to++];
+    const tracks = emptyTracks(lengths.slice(from, to), room);
+    for (let i = from; i < to; i++) fill(tracks, tracks.start[i - from], pages, after, firsts[i]);
+    yield tracks;
+  }
 }
 
 /** All pieces put together. */
@@ -75,7 +82,7 @@ const COLUMNS = ['frame', 'xPx', 'yPx', 'sxPx', 'syPx', 'brightness', 'flags'] a
 
 function emptyTracks(lengths: readonly number[], points: number): Tracks {
   const start = new Uint32Array(lengths.length + 1);
-  lengths.forEach((length, i) => (start[i + 1] = start[i] + length));
+  for (let i = 0; i < lengths.length; i++) start[i + 1] = start[i] + lengths[i];
   return {
     count: lengths.length,
     start,

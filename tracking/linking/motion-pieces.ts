@@ -40,10 +40,8 @@ export function motionPieces(spots: Spots, before: Int32Array): MotionPieces {
   }
   // Each link carries about two changes, one per axis.
   const skip = Math.max(1, Math.ceil((2 * links) / CHANGES_ENOUGH));
-  const collected = { x: [], y: [], vx: [], vy: [], steps: [] } as Record<string, number[]>;
+  const pieces: Collected = { x: [], y: [], vx: [], vy: [], steps: [], change: [], noise: [] };
   const start = [0];
-  const change: number[] = [];
-  const noise: number[] = [];
   let turn = 0;
   for (let s = 0; s < count; s++) {
     const b = before[s];
@@ -54,48 +52,65 @@ export function motionPieces(spots: Spots, before: Int32Array): MotionPieces {
       let length = 1;
       for (; after[last] >= 0 && 2 * (length - 1) < CHANGES_MOST; last = after[last]) length++;
       if (2 * (length - 2) >= CHANGES_LEAST && turn++ % skip === 0) {
-        take(first, last, length);
-        start.push(change.length);
+        collect(spots, after, first, last, length, pieces);
+        start.push(pieces.change.length);
       }
       first = last;
     }
   }
-  const list = (values: number[]) => Float64Array.from(values);
   return {
     count: start.length - 1,
-    xPx: list(collected.x),
-    yPx: list(collected.y),
-    vx: list(collected.vx),
-    vy: list(collected.vy),
-    stepVariance: list(collected.steps),
+    xPx: Float64Array.from(pieces.x),
+    yPx: Float64Array.from(pieces.y),
+    vx: Float64Array.from(pieces.vx),
+    vy: Float64Array.from(pieces.vy),
+    stepVariance: Float64Array.from(pieces.steps),
     start: Int32Array.from(start),
-    change: list(change),
-    noise: list(noise),
+    change: Float64Array.from(pieces.change),
+    noise: Float64Array.from(pieces.noise),
   };
+}
 
-  function take(first: number, last: number, length: number): void {
-    const { xPx, yPx, sxPx, syPx } = spots;
-    const vx = (xPx[last] - xPx[first]) / (length - 1);
-    const vy = (yPx[last] - yPx[first]) / (length - 1);
-    let steps = 0;
-    for (let a = first; a !== last;) {
-      const b = after[a];
-      const dx = xPx[b] - xPx[a] - vx;
-      const dy = yPx[b] - yPx[a] - vy;
-      const ends = sxPx[a] ** 2 + syPx[a] ** 2 + sxPx[b] ** 2 + syPx[b] ** 2;
-      steps += 0.5 * (dx * dx + dy * dy - ends);
-      const c = b === last ? -1 : after[b];
-      if (c >= 0) {
-        change.push(xPx[c] - 2 * xPx[b] + xPx[a], yPx[c] - 2 * yPx[b] + yPx[a]);
-        noise.push(sxPx[a] ** 2 + 4 * sxPx[b] ** 2 + sxPx[c] ** 2);
-        noise.push(syPx[a] ** 2 + 4 * syPx[b] ** 2 + syPx[c] ** 2);
-      }
-      a = b;
+/** Values by piece; changes and their noise one piece behind the other. */
+interface Collected {
+  x: number[];
+  y: number[];
+  vx: number[];
+  vy: number[];
+  steps: number[];
+  change: number[];
+  noise: number[];
+}
+
+/** Adds the piece of `length` spots from `first` to `last`. */
+function collect(
+  { xPx, yPx, sxPx, syPx }: Spots,
+  after: Int32Array,
+  first: number,
+  last: number,
+  length: number,
+  out: Collected,
+): void {
+  const vx = (xPx[last] - xPx[first]) / (length - 1);
+  const vy = (yPx[last] - yPx[first]) / (length - 1);
+  let steps = 0;
+  for (let a = first; a !== last;) {
+    const b = after[a];
+    const dx = xPx[b] - xPx[a] - vx;
+    const dy = yPx[b] - yPx[a] - vy;
+    const ends = sxPx[a] ** 2 + syPx[a] ** 2 + sxPx[b] ** 2 + syPx[b] ** 2;
+    steps += 0.5 * (dx * dx + dy * dy - ends);
+    const c = b === last ? -1 : after[b];
+    if (c >= 0) {
+      out.change.push(xPx[c] - 2 * xPx[b] + xPx[a], yPx[c] - 2 * yPx[b] + yPx[a]);
+      out.noise.push(sxPx[a] ** 2 + 4 * sxPx[b] ** 2 + sxPx[c] ** 2);
+      out.noise.push(syPx[a] ** 2 + 4 * syPx[b] ** 2 + syPx[c] ** 2);
     }
-    collected.x.push(0.5 * (xPx[first] + xPx[last]));
-    collected.y.push(0.5 * (yPx[first] + yPx[last]));
-    collected.vx.push(vx);
-    collected.vy.push(vy);
-    collected.steps.push(Math.max(0, steps / (length - 1)));
+    a = b;
   }
+  out.x.push(0.5 * (xPx[first] + xPx[last]));
+  out.y.push(0.5 * (yPx[first] + yPx[last]));
+  out.vx.push(vx);
+  out.vy.push(vy);
+  out.steps.push(Math.max(0, steps / (length - 1)));
 }

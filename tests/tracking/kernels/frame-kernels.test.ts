@@ -134,8 +134,8 @@ describe.each(SIZES)('on a frame of %d x %d px the compiled kernels', (width, he
 });
 
 const pixelsOf = ({ response }: FrameKernels) => Array.from(response.keys());
-const usableOf = (frame: FrameKernels) => pixelsOf(frame).map(frame.isUsable);
-const bareOf = (frame: FrameKernels) => Float32Array.from(pixelsOf(frame), frame.bareAt);
+const usableOf = (frame: FrameKernels) => pixelsOf(frame).map((pixel) => frame.isUsable(pixel));
+const bareOf = (frame: FrameKernels) => Float32Array.from(pixelsOf(frame), (pixel) => frame.bareAt(pixel));
 
 const peaksOf = (frame: FrameKernels, level: number): number[] => {
   const { at, count } = frame.findPeaks(level);
