@@ -81,7 +81,7 @@ function searchSeconds(
   return cpuSeconds(() => {
     for (const { counts } of picked) {
       images.setFrame(counts, { offsetCounts, perCount: 1 / recipe.gain, saturationCounts });
-      images.respond({ scale: 1, shift: 0 }, recipe.readNoise_e ** 2);
+      images.respond({ scale: 1, shift: 0 }, recipe.readNoise_e ** 2, level);
       images.findPeaks(level);
     }
   });

@@ -57,6 +57,7 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
   const widest = sizes.sigmaPx[Math.min(sizes.sigmaPx.length - 1, sizes.typical + 2)];
   const reach = Math.max(2, Math.ceil(FIT_REACH_SIGMAS[recipe.effort] * widest));
   const level = levelForFalseMaxima(recipe.falseSpotsPerFrame, sigma, pixels);
+  const peakLevel = level - LEVEL_MARGIN;
   const lookTwice = recipe.effort === 'full';
 
   const room = jointFitRoom(reach, createSpotKernel(sigma).reach, TOGETHER_SIGMAS * sigma);
@@ -84,11 +85,11 @@ export function createFrameSearch(model: ImageModel, recipe: Recipe, kernels: Ke
       pictures.paintBackground(backgroundBlocks, drift);
     }
     pictures.setFrame(counts, countScale);
-    pictures.respond(pictures.lightLevel(readVariance), readVariance);
+    pictures.respond(pictures.lightLevel(readVariance), readVariance, peakLevel);
   };
 
   const propose = () => {
-    const peaks = pictures.findPeaks(level - LEVEL_MARGIN);
+    const peaks = pictures.findPeaks(peakLevel);
     table.count = 0;
     for (let k = 0; k < peaks.count; k++) {
       const at = peaks.at[k];

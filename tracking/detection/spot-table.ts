@@ -84,20 +84,22 @@ export class SpotTable {
    * @returns how many; what doesn't fit into `found` is left out.
    */
   near(i: number, reachPx: number, found: Int32Array): number {
-    const column = this.clampColumn(Math.floor(this.x[i] / this.cellPx));
-    const row = this.clampRow(Math.floor(this.y[i] / this.cellPx));
+    const { x, y, alive, cellStart, cellSpots, columns, rows } = this;
+    const column = this.clampColumn(Math.floor(x[i] / this.cellPx));
+    const row = this.clampRow(Math.floor(y[i] / this.cellPx));
+    const left = Math.max(0, column - 1);
+    const right = Math.min(columns - 1, column + 1);
     let count = 0;
-    for (let r = Math.max(0, row - 1); r <= Math.min(this.rows - 1, row + 1); r++) {
-      for (let c = Math.max(0, column - 1); c <= Math.min(this.columns - 1, column + 1); c++) {
-        const cell = r * this.columns + c;
-        for (let k = this.cellStart[cell]; k < this.cellStart[cell + 1]; k++) {
-          const j = this.cellSpots[k];
-          if (j === i || this.alive[j] === 0) continue;
-          const dx = this.x[j] - this.x[i];
-          const dy = this.y[j] - this.y[i];
-          if (dx * dx + dy * dy > reachPx * reachPx || count === found.length) continue;
-          found[count++] = j;
-        }
+    for (let r = Math.max(0, row - 1); r <= Math.min(rows - 1, row + 1); r++) {
+      // Cells of a row follow each other, and so do their spots.
+      const end = cellStart[r * columns + right + 1];
+      for (let k = cellStart[r * columns + left]; k < end; k++) {
+        const j = cellSpots[k];
+        if (j === i || alive[j] === 0) continue;
+        const dx = x[j] - x[i];
+        const dy = y[j] - y[i];
+        if (dx * dx + dy * dy > reachPx * reachPx || count === found.length) continue;
+        found[count++] = j;
       }
     }
     return count;

@@ -70,8 +70,8 @@ export function spotFrames(
     return images;
   };
 
-  /** Takes a frame in and finds its light. */
-  const respond = (images: FrameKernels, index: number): Frame => {
+  /** Takes a frame in and finds its light, and its peaks if a level is given. */
+  const respond = (images: FrameKernels, index: number, peakLevel?: number): Frame => {
     // Far from each other first, so that a few are a fair choice.
     const turn = count < FRAMES_MOST ? index : (3 * index) % FRAMES_MOST;
     const f = Math.floor((turn * frames.length) / count);
@@ -80,7 +80,7 @@ export function spotFrames(
       images.paintBackground(blocks, drift);
     }
     images.setFrame(frames[f].counts, scale);
-    images.respond(images.lightLevel(readVariance), readVariance);
+    images.respond(images.lightLevel(readVariance), readVariance, peakLevel);
     return frames[f];
   };
 
@@ -92,7 +92,7 @@ export function spotFrames(
       kernelSquares: images.kernel.squares,
       response: images.response,
       peaksOf: (index, level) => {
-        frame = respond(images, index);
+        frame = respond(images, index, level);
         return images.findPeaks(level);
       },
       noiseOf: (index) => {

@@ -89,8 +89,10 @@ export interface FrameKernels extends FramePlanes {
   /**
    * Fills `response`, the frame in units of its own noise correlated with the spot; what is expected without spots
    * is max(0, scale * background + shift). Bad pixels count as dark, saturated ones as bright as they look.
+   *
+   * @param peakLevel where `findPeaks` will be asked for peaks from here on: they may be found along with the response
    */
-  respond(light: LightLevel, readVariance: number): void;
+  respond(light: LightLevel, readVariance: number, peakLevel?: number): void;
   /**
    * Pixels of `response` from `level` on that none of their eight neighbours exceeds; of equal neighbours
    * the first in reading order counts.

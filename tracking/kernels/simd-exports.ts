@@ -67,7 +67,9 @@ export interface SimdExports {
     scale: number,
     shift: number,
     floor: number,
-  ): void;
+    level: number,
+    peaks: number,
+  ): number;
   findPeaks(response: number, width: number, height: number, level: number, peaks: number): number;
   gatherLight(
     counts: number,

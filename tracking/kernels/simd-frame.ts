@@ -27,6 +27,8 @@ export class SimdFrame implements FrameKernels {
   private readonly lightOf: (scale: ElectronScale, readVariance: number) => LightLevel;
   private electrons: ElectronScale = { offset: 0, perCount: 1, saturationE: Infinity };
   private light: LightLevel = { scale: 1, shift: 0 };
+  /** Level of the peaks that were found along with the response; NaN once they were replaced by others. */
+  private foundLevel = Number.NaN;
 
   /** @param arena has grown; `at` are the planes in it */
   constructor(
@@ -83,10 +85,11 @@ export class SimdFrame implements FrameKernels {
     return this.lightOf(this.electrons, readVariance);
   }
 
-  respond(light: LightLevel, readVariance: number): void {
+  respond(light: LightLevel, readVariance: number, peakLevel = Infinity): void {
     const { simd, at, electrons } = this;
     this.light = light;
-    simd.respond(
+    this.foundLevel = peakLevel < Infinity ? peakLevel : Number.NaN;
+    this.peaks.count = simd.respond(
       at.facts,
       at.counts,
       at.bad,
@@ -108,11 +111,15 @@ export class SimdFrame implements FrameKernels {
       light.scale,
       light.shift,
       readVariance + DARK_VARIANCE_E2,
+      peakLevel,
+      at.peaks,
     );
   }
 
   findPeaks(level: number): Peaks {
     const { simd, at, peaks } = this;
+    if (level === this.foundLevel) return peaks;
+    this.foundLevel = Number.NaN;
     peaks.count = simd.findPeaks(at.response, this.width, this.height, level, at.peaks);
     return peaks;
   }

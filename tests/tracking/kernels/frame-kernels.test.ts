@@ -120,6 +120,25 @@ describe.each(SIZES)('on a frame of %d x %d px the compiled kernels', (width, he
     }
   });
 
+  test('find the same peaks along with the response as afterwards', () => {
+    const frame = prepared(simd, width, height, 3, 1.2);
+    const finite = frame.background.fill(5);
+    const random = createRandom(11);
+    frame.setFrame(
+      finite.map((light) => 100 + 2 * random.poisson(light)),
+      SCALE,
+    );
+    for (const level of [-1, 0.5, 2, 3.5]) {
+      frame.respond({ scale: 1, shift: 0 }, READ_VARIANCE);
+      const afterwards = peaksOf(frame, level);
+      frame.respond({ scale: 1, shift: 0 }, READ_VARIANCE, level);
+      expect(peaksOf(frame, level)).toEqual(afterwards);
+      // Asked for another level, it looks again, and then for this one once more.
+      expect(peaksOf(frame, level + 1).length).toBeLessThanOrEqual(afterwards.length);
+      expect(peaksOf(frame, level)).toEqual(afterwards);
+    }
+  });
+
   test('find the same peaks in the same picture, among equal neighbours too', () => {
     const random = createRandom(9);
     const [a, b] = [plainKernels, simd].map((k) => k.forImages({ width, height, spotSigmaPx: 1.2 }));

@@ -6,10 +6,26 @@
  * @returns number of peaks
  */
 export function findPeaks(response: usize, width: i32, height: i32, level: f32, peaks: usize): i32 {
+  return <i32>((findPeaksOfRows(response, width, height, 0, height, level, peaks) - peaks) >> 2);
+}
+
+/**
+ * The same in rows `from .. to - 1`; those to either side must be there.
+ *
+ * @param peaks address of the first peak to be written @returns address behind the last one
+ */
+export function findPeaksOfRows(
+  response: usize,
+  width: i32,
+  height: i32,
+  from: i32,
+  to: i32,
+  level: f32,
+  peaks: usize,
+): usize {
   const levels = f32x4.splat(level);
-  const first = peaks;
   const stride = (<usize>width) << 2;
-  for (let y = 0; y < height; y++) {
+  for (let y = from; y < to; y++) {
     const row = response + ((<usize>y * <usize>width) << 2);
     let x = 0;
     for (; x + 16 <= width; x += 16) {
@@ -37,7 +53,7 @@ export function findPeaks(response: usize, width: i32, height: i32, level: f32, 
       peaks += 4;
     }
   }
-  return <i32>((peaks - first) >> 2);
+  return peaks;
 }
 
 /** Which of 4 pixels are bright and, when they have all their neighbours, peaks. */

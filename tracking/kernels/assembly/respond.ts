@@ -1,17 +1,20 @@
 import { correlateColumns, correlateRow } from './correlate';
 import { FrameFacts } from './counts';
+import { findPeaksOfRows } from './find-peaks';
 import { noiseRow } from './noise-row';
 
 /**
  * Writes down the facts of the frame, then fills `response`: the frame in units of its own noise (see `noiseRow`),
  * correlated with the spot along x and y. Rows are correlated along x into a band of rows that
- * stays in the cache, and from there along y.
+ * stays in the cache, and from there along y; peaks are looked for while their rows are there, too.
  *
  * @param facts address of `FrameFacts`
  * @param noise f32, room for `reach` zeros, a row and `reach` zeros
  * @param band f32, `bandRows` + 2 `reach` rows of `paddedWidth` pixels, which is a multiple of 16
  * @param weights f32 at distance 0 .. reach
  * @param correctionX f32 factor per column @param correctionY f32 factor per row
+ * @param level peaks from here on are found, none for infinity @param peaks i32, see `findPeaks`
+ * @returns number of peaks
  */
 export function respond(
   facts: usize,
@@ -35,7 +38,9 @@ export function respond(
   scale: f32,
   shift: f32,
   floor: f32,
-): void {
+  level: f32,
+  peaks: usize,
+): i32 {
   const frame = changetype<FrameFacts>(facts);
   frame.offset = offset;
   frame.perCount = perCount;
@@ -51,6 +56,8 @@ export function respond(
   memory.fill(band, 0, reach * stride);
   let next = 0;
   let place = band + <usize>(reach * stride);
+  let searched = 0;
+  let lastPeak = peaks;
   for (let top = 0; top < height; top += bandRows) {
     const rows = min(bandRows, height - top);
     for (; next < top + rows + reach; next++) {
@@ -72,7 +79,14 @@ export function respond(
       const out = response + ((<usize>y * <usize>width) << 2);
       correlateColumns(row, stride, weights, reach, factor, out, width);
     }
+    if (level < f32.MAX_VALUE) {
+      // The last row's peaks hang on the row below, unless there is none.
+      const whole = top + rows < height ? top + rows - 1 : height;
+      lastPeak = findPeaksOfRows(response, width, height, searched, whole, level, lastPeak);
+      searched = whole;
+    }
     memory.copy(band, band + <usize>(rows * stride), 2 * reach * stride);
     place = band + <usize>(2 * reach * stride);
   }
+  return <i32>((lastPeak - peaks) >> 2);
 }
