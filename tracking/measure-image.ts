@@ -1,7 +1,7 @@
 import { fitBackground } from './image-model/background-nodes';
 import { findBadPixels } from './image-model/bad-pixels';
 import { varianceOf, type PixelNoise } from './image-model/pixel-noise';
-import { interpolateBlocks } from './image-model/block-grid';
+import { interpolateBlocks, raiseToZero } from './image-model/block-grid';
 import { blockStatistics } from './image-model/block-statistics';
 import { measureCameraNoise } from './image-model/photon-transfer';
 import { findQuietPixels } from './image-model/quiet-pixels';
@@ -97,11 +97,6 @@ export function measureImage(
   model.spotSigmaPx = typeof request.spotSizePx === 'number' ? request.spotSizePx : size.sigmaPx;
   model.spotSigmaSpreadPx = size.spreadPx;
   return model;
-}
-
-/** Straight lines carried on to the border may fall below no light at all. */
-function raiseToZero(values: Float32Array): void {
-  for (let i = 0; i < values.length; i++) if (values[i] < 0) values[i] = 0;
 }
 
 function checkFrames(frames: readonly Frame[], frameNumbers: readonly number[] | null): void {

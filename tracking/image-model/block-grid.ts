@@ -72,6 +72,11 @@ export function paintBlocks(values: ArrayLike<number>, grid: BlockGrid, image: F
   }
 }
 
+/** Straight lines carried on to the border may fall below no light at all. */
+export function raiseToZero(image: Float32Array): void {
+  for (let i = 0; i < image.length; i++) if (image[i] < 0) image[i] = 0;
+}
+
 /** For each row of pixels the row of blocks above it, and its way from there to the next: 0 to 1, farther at borders. */
 export function rowsOfBlocks(height: number, rows: number): { above: Int32Array; share: Float64Array } {
   const middle = blockMiddles(height, rows);

@@ -1,7 +1,7 @@
 import { measureLightLevel } from '../detection/light-level';
 import { createMatchedFilter, findPeaks } from '../detection/matched-filter';
 import { DARK_VARIANCE_E2 } from '../detection/second-look';
-import { paintBlocks } from '../image-model/block-grid';
+import { paintBlocks, raiseToZero } from '../image-model/block-grid';
 import type { FrameKernels, ImageSpec, Kernels, Peaks } from './kernels';
 import { electronScale, electronsOf } from './noise-units';
 import { plainPairs } from './plain-pairs';
@@ -25,8 +25,7 @@ function forImages({ width, height, spotSigmaPx }: ImageSpec): FrameKernels {
 
   const paintBackground: FrameKernels['paintBackground'] = (blocks, { columns, rows }) => {
     paintBlocks(blocks, { width, height, columns, rows }, background);
-    // Straight lines carried on to the border may fall below no light at all.
-    for (let i = 0; i < pixels; i++) if (background[i] < 0) background[i] = 0;
+    raiseToZero(background);
   };
 
   const setFrame: FrameKernels['setFrame'] = (counts, countScale) => {
